@@ -1,0 +1,1 @@
+//! C binding of `ampwright`.

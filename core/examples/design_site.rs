@@ -1,0 +1,2 @@
+//! Designs or inspects a site and prints the report.
+fn main() {}

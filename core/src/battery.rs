@@ -1,0 +1,1 @@
+//! Banks as far as wiring and charging limits need them.

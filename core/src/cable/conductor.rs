@@ -1,0 +1,53 @@
+//! One conductor: metal, stranding, coating, size, insulation.
+
+use super::Insulation;
+use crate::quantity::ConductorSize;
+
+/// Metal of the conductor.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[non_exhaustive]
+pub enum Material {
+    /// Copper.
+    Copper,
+    /// Aluminium.
+    Aluminium,
+    /// Aluminium with a copper skin: refused everywhere (R18).
+    CopperCladAluminium,
+}
+
+/// Stranding after IEC 60228.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Class {
+    /// Class 1: solid.
+    Solid,
+    /// Class 2: stranded, for fixed wiring.
+    Stranded,
+    /// Class 5: flexible.
+    Flexible,
+    /// Class 6: extra flexible (welding and moving cables).
+    ExtraFlexible,
+}
+
+/// Surface of the strands.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Coating {
+    /// Plain copper.
+    Plain,
+    /// Tinned or otherwise metal-coated.
+    Tinned,
+}
+
+/// One insulated conductor.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Conductor {
+    /// Size as designated.
+    pub size: ConductorSize,
+    /// Metal.
+    pub material: Material,
+    /// Stranding.
+    pub class: Class,
+    /// Plain or tinned.
+    pub coating: Coating,
+    /// Insulation with its temperature rating.
+    pub insulation: Insulation,
+}

@@ -1,0 +1,1 @@
+//! Declaration of the calculations that every face offers.

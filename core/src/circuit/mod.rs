@@ -1,0 +1,1 @@
+//! Sizing and judging one run.

@@ -1,0 +1,270 @@
+//! What can go wrong, as sentences for the person at the bench.
+//!
+//! One `Copy` enum without owned text: it exists in every build, firmware included. The caller adds the
+//! place (which circuit, which line); the variants carry the numbers.
+
+use core::fmt;
+
+use crate::citation::Citation;
+
+/// The valid range of an input, in the unit it is stated in.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Allowed {
+    /// Any finite number.
+    Finite,
+    /// Greater than the limit.
+    Above(f64),
+    /// The limit or more.
+    AtLeast(f64),
+    /// From the first to the second, both included.
+    Between(f64, f64),
+    /// Greater than the first, up to and including the second.
+    AboveUpTo(f64, f64),
+    /// One of the codes 0 … n − 1.
+    Code(u8),
+    /// As the sentence says.
+    Words(&'static str),
+}
+
+impl fmt::Display for Allowed {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match *self {
+            Self::Finite => f.write_str("a finite number"),
+            Self::Above(least) => write!(f, "greater than {least}"),
+            Self::AtLeast(least) => write!(f, "{least} or more"),
+            Self::Between(least, most) => write!(f, "between {least} and {most}"),
+            Self::AboveUpTo(least, most) => write!(f, "greater than {least} and at most {most}"),
+            Self::Code(count) => write!(f, "a whole number from 0 to {}", count.saturating_sub(1)),
+            Self::Words(words) => f.write_str(words),
+        }
+    }
+}
+
+/// The first characters of a text that was refused; `Copy`, so that errors need no memory.
+#[derive(Clone, Copy, PartialEq, Eq)]
+pub struct Snippet {
+    bytes: [u8; Self::ROOM],
+    used: u8,
+    cut: bool,
+}
+
+impl Snippet {
+    const ROOM: usize = 32;
+
+    /// Keeps the first 32 bytes, cut at a character.
+    pub fn new(text: &str) -> Self {
+        let mut bytes = [0; Self::ROOM];
+        let mut end = text.len().min(Self::ROOM);
+        while !text.is_char_boundary(end) {
+            end -= 1;
+        }
+        for (to, from) in bytes.iter_mut().zip(text.bytes().take(end)) {
+            *to = from;
+        }
+        // At most 32, see ROOM.
+        #[allow(clippy::cast_possible_truncation)]
+        Self { bytes, used: end as u8, cut: end < text.len() }
+    }
+
+    /// The text kept.
+    pub fn as_str(&self) -> &str {
+        self.bytes.get(..usize::from(self.used)).and_then(|b| core::str::from_utf8(b).ok()).unwrap_or("")
+    }
+}
+
+impl fmt::Display for Snippet {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        // Control characters would break the one-line sentence.
+        for c in self.as_str().chars() {
+            if c.is_control() { write!(f, "{}", c.escape_default())? } else { write!(f, "{c}")? }
+        }
+        if self.cut { f.write_str("…") } else { Ok(()) }
+    }
+}
+
+impl fmt::Debug for Snippet {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        write!(f, "{:?}", self.as_str())
+    }
+}
+
+/// Everything a calculation of this crate can refuse.
+#[derive(Clone, Copy, Debug, PartialEq, thiserror::Error)]
+#[non_exhaustive]
+pub enum Error {
+    /// An input is NaN, infinite or outside its range.
+    #[error("{name} is {value}{}{unit}; it must be {allowed}", if unit.is_empty() { "" } else { " " })]
+    OutOfRange {
+        /// The input, as the face spells it.
+        name: &'static str,
+        /// Its value in `unit`.
+        value: f64,
+        /// Unit of value and range.
+        unit: &'static str,
+        /// What is admitted.
+        allowed: Allowed,
+    },
+    /// Two or more inputs do not go together.
+    #[error("{name} is {value} {unit}; {why}")]
+    Contradiction {
+        /// The input that does not fit the others.
+        name: &'static str,
+        /// Its value in `unit`.
+        value: f64,
+        /// Its unit.
+        unit: &'static str,
+        /// What it contradicts, and what to do.
+        why: &'static str,
+    },
+    /// A bare number where a unit is needed.
+    #[error("'{text}' has no unit; write {accepted}")]
+    NoUnit {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The unit is not known.
+    #[error("'{text}' has a unit that is not known here; write {accepted}")]
+    UnknownUnit {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The unit measures something else.
+    #[error("'{text}' is {found}; {needed} is needed, such as {accepted}")]
+    WrongUnit {
+        /// The text as entered.
+        text: Snippet,
+        /// What it is, with its article: `a voltage`.
+        found: &'static str,
+        /// What is needed: `a length`.
+        needed: &'static str,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The text does not begin with a number.
+    #[error("'{text}' does not begin with a number; write {accepted}")]
+    NotANumber {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The number is NaN, infinite or too large to hold.
+    #[error("'{text}' is not a finite number; write {accepted}")]
+    NotFinite {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The text is none of the words that are known here.
+    #[error("'{text}' is not known here; it must be one of {allowed}")]
+    UnknownWord {
+        /// The text as entered.
+        text: Snippet,
+        /// The words that are.
+        allowed: &'static str,
+    },
+    /// A published table does not go that far.
+    #[error("{what} is {value} {unit}; the table ({table}) {end}; {remedy}")]
+    TableEnds {
+        /// What was looked up.
+        what: &'static str,
+        /// Its value in `unit`.
+        value: f64,
+        /// Its unit.
+        unit: &'static str,
+        /// The table.
+        table: Citation,
+        /// Where it ends: `ends at 60 degC for PVC`.
+        end: &'static str,
+        /// What to do.
+        remedy: &'static str,
+    },
+    /// No table of the rule set covers the case.
+    #[error("{what} has no value in {table}; {remedy}")]
+    NotTabulated {
+        /// What was looked up.
+        what: &'static str,
+        /// The table.
+        table: Citation,
+        /// What to do.
+        remedy: &'static str,
+    },
+    /// The rule set, material or part is not admitted.
+    #[error("{what} is refused: {why} ({rule})")]
+    Refused {
+        /// What is refused.
+        what: &'static str,
+        /// The reason, and what to use instead.
+        why: &'static str,
+        /// The rule behind it.
+        rule: Citation,
+    },
+    /// A line cannot carry the power asked of it.
+    #[error(
+        "the line cannot deliver {asked_W:.0} W from {source_V:.2} V through {loop_ohm:.5} ohm; the most is \
+         {most_W:.0} W (V²/4R); use a larger cross-section, a shorter run or a higher voltage"
+    )]
+    NoSolution {
+        /// Power asked, in watts.
+        #[allow(non_snake_case)]
+        asked_W: f64,
+        /// Voltage at the source, in volts.
+        #[allow(non_snake_case)]
+        source_V: f64,
+        /// Loop resistance, in ohms.
+        loop_ohm: f64,
+        /// The most that can be delivered, in watts.
+        #[allow(non_snake_case)]
+        most_W: f64,
+    },
+    /// No size or rating that may be used passes every check.
+    #[error("no {what} passes every check; {remedy}")]
+    NoneFits {
+        /// What was looked for: `conductor size`, `device rating`.
+        what: &'static str,
+        /// What to do.
+        remedy: &'static str,
+    },
+    /// The parts do not form a tree that hangs from one source.
+    #[error("{what}")]
+    NotATree {
+        /// What is wrong, and what to do.
+        what: &'static str,
+    },
+    /// An iteration did not reach its tolerance.
+    #[error("{what} did not settle within {steps} steps; check the inputs for values far from practice")]
+    NotSettled {
+        /// What was computed.
+        what: &'static str,
+        /// Steps made.
+        steps: u32,
+    },
+}
+
+impl Error {
+    /// Permanent short name of the variant: the same in every face.
+    pub const fn slug(&self) -> &'static str {
+        match self {
+            Self::OutOfRange { .. } => "out-of-range",
+            Self::Contradiction { .. } => "contradiction",
+            Self::NoUnit { .. } => "no-unit",
+            Self::UnknownUnit { .. } => "unknown-unit",
+            Self::WrongUnit { .. } => "wrong-unit",
+            Self::NotANumber { .. } => "not-a-number",
+            Self::NotFinite { .. } => "not-finite",
+            Self::UnknownWord { .. } => "unknown-word",
+            Self::TableEnds { .. } => "table-ends",
+            Self::NotTabulated { .. } => "not-tabulated",
+            Self::Refused { .. } => "refused",
+            Self::NoSolution { .. } => "no-solution",
+            Self::NoneFits { .. } => "none-fits",
+            Self::NotATree { .. } => "not-a-tree",
+            Self::NotSettled { .. } => "not-settled",
+        }
+    }
+}

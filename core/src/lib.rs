@@ -1,0 +1,37 @@
+//! Low-voltage DC power where there is no grid: cables, fuses, banks, computed with units and reasons.
+//!
+//! Nothing is computed without its reason, and a check without data is `not checked`, never passed.
+//! Local codes and licensed practice decide; the text of each standard governs.
+#![no_std]
+#![forbid(unsafe_code)]
+#![deny(missing_docs)]
+#![cfg_attr(not(test), deny(clippy::unwrap_used, clippy::expect_used, clippy::panic, clippy::indexing_slicing))]
+
+#[cfg(feature = "alloc")]
+extern crate alloc;
+#[cfg(feature = "std")]
+extern crate std;
+
+// Floor 0
+pub mod citation;
+pub mod error;
+pub mod quantity;
+// Floor 1
+pub mod catalogue;
+pub mod law;
+// Floor 2
+pub mod battery;
+pub mod cable;
+pub mod device;
+pub mod load;
+// Floor 3
+pub mod rules;
+// Floor 4
+pub mod network;
+pub mod protection;
+pub mod circuit;
+// Floor 6
+#[cfg(feature = "site")]
+pub mod site;
+
+pub use error::Error;

@@ -1,0 +1,1 @@
+//! Loads: what draws current, and how it depends on voltage.

@@ -1,0 +1,1 @@
+//! Voltages and currents in a tree of runs, and prospective fault currents.

@@ -1,0 +1,41 @@
+//! Quantities, sizes and their text form.
+//!
+//! Public functions take and return [`uom`] quantities; this room re-exports those in use and adds the values
+//! that are more than a number: conductor sizes, states of charge, charge rates.
+
+mod rate;
+mod size;
+mod text;
+
+pub use rate::{ChargeRate, StateOfCharge};
+pub use size::{ConductorSize, Designation};
+pub use text::{Dimension, Entered, Exact, Readable, Textual, exact, parse, parse_entered, readable};
+
+pub use uom::si::f64::{
+    Area, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, ElectricalResistivity,
+    Energy, Length, Power, Ratio, TemperatureInterval, ThermodynamicTemperature, Time,
+};
+
+/// Resistance per conductor length; base unit Ω/m.
+pub type LinearResistance = uom::si::Quantity<
+    uom::si::ISQ<
+        uom::typenum::P1,
+        uom::typenum::P1,
+        uom::typenum::N3,
+        uom::typenum::N2,
+        uom::typenum::Z0,
+        uom::typenum::Z0,
+        uom::typenum::Z0,
+    >,
+    uom::si::SI<f64>,
+    f64,
+>;
+
+/// Square root that is exact to the last bit in every build.
+#[must_use]
+pub fn sqrt(x: f64) -> f64 {
+    #[cfg(feature = "std")]
+    return x.sqrt();
+    #[cfg(not(feature = "std"))]
+    return libm::sqrt(x);
+}

@@ -1,0 +1,1 @@
+//! Tables and limits of the rule set `us`.

@@ -1,0 +1,1 @@
+//! A whole site: its document, its checks, its report.

@@ -1,0 +1,1 @@
+//! What the test targets share: reading `tests/reference`.
