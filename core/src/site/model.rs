@@ -1,0 +1,409 @@
+//! The site document as data: what the file states, checked entry by entry, nothing computed.
+
+use alloc::string::String;
+use alloc::vec::Vec;
+
+use crate::battery::Chemistry;
+use crate::cable::{Class, Coating, Insulation, JointKind, Material, Stud};
+use crate::device::{Family, Polarity, Supply};
+use crate::quantity::{
+    ConductorSize, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power,
+    Ratio, ThermodynamicTemperature,
+};
+use crate::rules::{Installation, LoadUse, Rules, Space};
+
+/// Which pole is tied to earth (`earthing`, mandatory: R19).
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Earthing {
+    /// `negative`: the negative pole is earthed at one point.
+    Negative,
+    /// `positive`.
+    Positive,
+    /// `floating`: neither pole is earthed.
+    Floating,
+}
+
+/// A pole of the system.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Pole {
+    /// `positive`.
+    Positive,
+    /// `negative`.
+    Negative,
+    /// `both`.
+    Both,
+}
+
+/// End of a circuit.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum End {
+    /// `from`.
+    From,
+    /// `to`.
+    To,
+}
+
+/// The whole document.
+#[derive(Clone, Debug)]
+pub struct Site {
+    /// `[site] name`.
+    pub name: String,
+    /// `[site] rules` with `[rules.override]`.
+    pub rules: Rules,
+    /// `[site] earthing`.
+    pub earthing: Earthing,
+    /// `[site] ambient = ["-25 degC", "30 degC"]`: least and greatest.
+    pub ambient: (ThermodynamicTemperature, ThermodynamicTemperature),
+    /// `[[bank]]`, in file order; all `Vec`s are.
+    pub banks: Vec<BankEntry>,
+    /// `[[board]]`.
+    pub boards: Vec<Board>,
+    /// `[[inverter]]`.
+    pub inverters: Vec<InverterEntry>,
+    /// `[[load]]`.
+    pub loads: Vec<LoadEntry>,
+    /// `[[circuit]]`.
+    pub circuits: Vec<CircuitEntry>,
+    /// `[stock]`.
+    pub stock: Stock,
+}
+
+/// `[[bank]]`.
+#[derive(Clone, Debug)]
+pub struct BankEntry {
+    /// `name`.
+    pub name: String,
+    /// Line of its header in the file, from 1.
+    pub line: u32,
+    /// `chemistry`: `flooded`, `agm`, `gel`, `lfp`, `nmc`, `nicd`.
+    pub chemistry: Chemistry,
+    /// `nominal = "24 V"`.
+    pub nominal: ElectricPotential,
+    /// `capacity = "400 Ah"`, of the whole bank.
+    pub capacity: ElectricCharge,
+    /// `strings = 2`, in parallel; 1 if absent.
+    pub strings: u32,
+    /// `cut_off = "21 V"`: least terminal voltage in use.
+    pub cut_off: ElectricPotential,
+    /// `highest = "31 V"`: cold-compensated equalising or charge voltage.
+    pub highest: ElectricPotential,
+    /// `short_circuit = "4 kA"`: the maker's stated value for the whole bank.
+    pub short_circuit: Option<ElectricCurrent>,
+    /// `internal_resistance = "6 mohm"`: whole bank, full, warm, new.
+    pub internal_resistance: Option<ElectricalResistance>,
+    /// `greatest_discharge = "200 A"`: the maker's or the pack's own limit.
+    pub greatest_discharge: Option<ElectricCurrent>,
+    /// `stud = "M8"` of the terminals.
+    pub stud: Option<Stud>,
+}
+
+/// `[[board]]`: a busbar or distribution board.
+#[derive(Clone, Debug)]
+pub struct Board {
+    /// `name`.
+    pub name: String,
+    /// Line in the file.
+    pub line: u32,
+    /// `busbar = "250 A"`: rated current.
+    pub busbar: Option<ElectricCurrent>,
+    /// `stud = "M8"`.
+    pub stud: Option<Stud>,
+    /// `lugs_on_stud = 3`: the most lugs on one stud.
+    pub lugs_on_stud: Option<u32>,
+}
+
+/// `[[inverter]]`.
+#[derive(Clone, Debug)]
+pub struct InverterEntry {
+    /// `name`.
+    pub name: String,
+    /// Line in the file.
+    pub line: u32,
+    /// `power = "1200 W"`: continuous, AC side.
+    pub power: Power,
+    /// `surge = "2400 W"`.
+    pub surge: Option<Power>,
+    /// `efficiency = 0.9` or `"90 %"`: at full power and lowest voltage.
+    pub efficiency: Ratio,
+    /// `idle = "12 W"`.
+    pub idle: Option<Power>,
+    /// `least = "21 V"`: it trips below.
+    pub least: Option<ElectricPotential>,
+    /// `greatest = "32 V"`.
+    pub greatest: Option<ElectricPotential>,
+    /// `stud = "M8"`.
+    pub stud: Option<Stud>,
+    /// `terminal = "75 degC"`: marked temperature rating.
+    pub terminal: Option<ThermodynamicTemperature>,
+}
+
+/// How a load draws (R3).
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum LoadKind {
+    /// `constant_power`: converters, most motors and electronics; the default.
+    Power,
+    /// `constant_current`.
+    Current,
+    /// `resistive`: heaters, filament lamps.
+    Resistive,
+}
+
+/// `[[load]]`.
+#[derive(Clone, Debug)]
+pub struct LoadEntry {
+    /// `name`.
+    pub name: String,
+    /// Line in the file.
+    pub line: u32,
+    /// `power = "60 W"` at nominal voltage; exactly one of `power` and `current`.
+    pub power: Option<Power>,
+    /// `current = "5 A"`.
+    pub current: Option<ElectricCurrent>,
+    /// `kind`; `constant_power` with `power`, `constant_current` with `current`.
+    pub kind: LoadKind,
+    /// `count = 4`; 1 if absent.
+    pub count: u32,
+    /// `continuous = false`: three hours or more; true if absent.
+    pub continuous: bool,
+    /// `least = "20 V"`.
+    pub least: Option<ElectricPotential>,
+    /// `greatest = "30 V"`.
+    pub greatest: Option<ElectricPotential>,
+    /// `start = "30 A"` while starting.
+    pub start: Option<ElectricCurrent>,
+    /// `use = "critical" | "lighting" | "other"`; `other` if absent.
+    pub usage: LoadUse,
+    /// `stud`.
+    pub stud: Option<Stud>,
+    /// `terminal = "75 degC"`.
+    pub terminal: Option<ThermodynamicTemperature>,
+}
+
+/// Way back of the current.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Return {
+    /// `return = "conductor"`: the default.
+    Conductor,
+    /// `return = "chassis"`, with `return_resistance` if stated (R9).
+    Chassis(Option<ElectricalResistance>),
+}
+
+/// `[[circuit]]`: one run of two conductors between two ends.
+#[derive(Clone, Debug)]
+pub struct CircuitEntry {
+    /// `name`.
+    pub name: String,
+    /// Line in the file.
+    pub line: u32,
+    /// `from`: name of a bank or board.
+    pub from: String,
+    /// `to`: name of a board, load, inverter or bank.
+    pub to: String,
+    /// `one_way = "2.5 m"`, or both of `positive_length` and `negative_length`: per conductor.
+    pub positive_length: Length,
+    /// See `positive_length`.
+    pub negative_length: Length,
+    /// `size = "16 mm2"`; designed if absent.
+    pub size: Option<ConductorSize>,
+    /// `negative_size`, if it differs.
+    pub negative_size: Option<ConductorSize>,
+    /// `material`: `copper` (default), `aluminium`, `copper_clad_aluminium`.
+    pub material: Material,
+    /// `class`: 1, 2, 5 (default) or 6.
+    pub class: Class,
+    /// `coating`: `plain` (default) or `tinned`.
+    pub coating: Coating,
+    /// `insulation = "PVC 70 degC"`; the rule set's usual one if absent.
+    pub insulation: Option<Insulation>,
+    /// `sheathed = true`; false if absent.
+    pub sheathed: bool,
+    /// `installed`: `free_air`, `spaced_free_air`, `cable_free_air`, `clipped`, `conduit`, `cable_in_conduit`,
+    /// `insulated_wall`, `cable_in_insulated_wall`, `duct`, `buried`, `loom`; the set's usual one if absent.
+    pub installed: Option<Installation>,
+    /// `space`: `ordinary` (default), `engine`, `rooftop`.
+    pub space: Space,
+    /// `bundled = 6`: current-carrying conductors together, its own two included; 2 if absent.
+    pub bundled: u16,
+    /// `ambient = "40 degC"`; the site's greatest if absent.
+    pub ambient: Option<ThermodynamicTemperature>,
+    /// `moving = true`: flexing or vibrating run.
+    pub moving: bool,
+    /// `cranking = true`: engine starting conductors.
+    pub cranking: bool,
+    /// `return`.
+    pub way_back: Return,
+    /// `current = "100 A"`: stated design current where loads do not tell it (bank to bank); the greater counts.
+    pub current: Option<ElectricCurrent>,
+    /// `diversity = 0.7`: the user's own factor on the sum of loads (R16); 1 if absent.
+    pub diversity: f64,
+    /// `drop = "3 %"`: the user's own limit.
+    pub drop: Option<Ratio>,
+    /// `terminal = "75 degC"`: marked rating of the terminals at both ends.
+    pub terminal: Option<ThermodynamicTemperature>,
+    /// `from_lug = "M8"`: stud size of the lugs at `from`.
+    pub from_lug: Option<Stud>,
+    /// `to_lug = "M8"`.
+    pub to_lug: Option<Stud>,
+    /// `[[circuit.device]]`; designed if there is none.
+    pub devices: Vec<DeviceEntry>,
+    /// `[[circuit.joint]]`; the generic lugs of both ends if there is none.
+    pub joints: Vec<JointEntry>,
+    /// `[[circuit.part]]`: switches, relays, connectors, shunts in the path.
+    pub parts: Vec<Part>,
+    /// `device = "none"` states that there is none and none shall be designed.
+    pub no_device: bool,
+}
+
+/// `[[circuit.device]]`.
+#[derive(Clone, Debug)]
+pub struct DeviceEntry {
+    /// `name`; `F1`, `F2` … by order in the file if absent.
+    pub name: String,
+    /// Line in the file.
+    pub line: u32,
+    /// `family`: the words of [`Family`]; designed if absent.
+    pub family: Option<Family>,
+    /// `rating = "100 A"`; designed if absent.
+    pub rating: Option<ElectricCurrent>,
+    /// `dc_voltage = "80 V"`, or `ac_only = true`.
+    pub supply: Supply,
+    /// `breaking = "10 kA"` on DC at that voltage.
+    pub breaking: Option<ElectricCurrent>,
+    /// `polarised = true`.
+    pub polarity: Polarity,
+    /// `full_rated = true`.
+    pub full_rated: bool,
+    /// `pole`: `positive` (default), `negative`, `both`.
+    pub pole: Pole,
+    /// `end`: `from` (default) or `to`: which end it guards.
+    pub end: End,
+    /// `from_source = "150 mm"`: conductor between that end and the device.
+    pub from_source: Option<Length>,
+    /// `let_through = "12000 A2s"`: I²t at the greatest prospective current, A²·s.
+    #[allow(non_snake_case)]
+    pub let_through_A2s: Option<f64>,
+    /// `terminal_range = ["2.5 mm2", "35 mm2"]`.
+    pub terminal_range: Option<(ConductorSize, ConductorSize)>,
+    /// `terminal = "75 degC"`.
+    pub terminal: Option<ThermodynamicTemperature>,
+}
+
+/// `[[circuit.joint]]`.
+#[derive(Clone, Debug)]
+pub struct JointEntry {
+    /// `kind`: `lug`, `terminal`, `switch`, `relay`, `fuse`, `breaker`, `shunt`, `busbar`, `connector`.
+    pub kind: JointKind,
+    /// `count`; 1 if absent.
+    pub count: u32,
+    /// `resistance = "0.1 mohm"` each; generic if absent.
+    pub resistance: Option<ElectricalResistance>,
+}
+
+/// Part in the path (R8).
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum PartKind {
+    /// `switch`.
+    Switch,
+    /// `selector`.
+    Selector,
+    /// `relay`.
+    Relay,
+    /// `shunt`.
+    Shunt,
+    /// `connector`.
+    Connector,
+    /// `holder`.
+    Holder,
+}
+
+/// `[[circuit.part]]`.
+#[derive(Clone, Debug)]
+pub struct Part {
+    /// `name`.
+    pub name: String,
+    /// Line in the file.
+    pub line: u32,
+    /// `kind`.
+    pub kind: PartKind,
+    /// `rating = "200 A"`.
+    pub rating: Option<ElectricCurrent>,
+    /// `resistance`; generic if absent.
+    pub resistance: Option<ElectricalResistance>,
+    /// `dc_voltage = "80 V"`, or `ac_only = true`.
+    pub supply: Supply,
+}
+
+/// `[stock]`: what can be bought or lies on the shelf. An empty list means: standard sizes and plain generic parts.
+#[derive(Clone, Debug, Default)]
+pub struct Stock {
+    /// `[[stock.cable]]`.
+    pub cables: Vec<StockCable>,
+    /// `[[stock.device]]`.
+    pub devices: Vec<StockDevice>,
+    /// `[[stock.lug]]`.
+    pub lugs: Vec<StockLug>,
+}
+
+/// `[[stock.cable]]`.
+#[derive(Clone, Debug)]
+pub struct StockCable {
+    /// Line in the file.
+    pub line: u32,
+    /// `size`.
+    pub size: ConductorSize,
+    /// `material`, `class`, `coating` as in a circuit.
+    pub material: Material,
+    /// Stranding.
+    pub class: Class,
+    /// Coating.
+    pub coating: Coating,
+    /// `insulation`.
+    pub insulation: Insulation,
+    /// `sheathed`.
+    pub sheathed: bool,
+    /// `length = "50 m"` on the shelf, of single conductor.
+    pub length: Option<Length>,
+    /// `price`: per metre of single conductor, in the user's currency.
+    pub price: Option<f64>,
+}
+
+/// `[[stock.device]]`.
+#[derive(Clone, Debug)]
+pub struct StockDevice {
+    /// Line in the file.
+    pub line: u32,
+    /// `family`.
+    pub family: Family,
+    /// `ratings = ["10 A", "15 A"]`; all of the family's if absent.
+    pub ratings: Vec<ElectricCurrent>,
+    /// `dc_voltage` or `ac_only`.
+    pub supply: Supply,
+    /// `breaking`.
+    pub breaking: Option<ElectricCurrent>,
+    /// `polarised`.
+    pub polarity: Polarity,
+    /// `full_rated`.
+    pub full_rated: bool,
+    /// `let_through`, A²·s.
+    #[allow(non_snake_case)]
+    pub let_through_A2s: Option<f64>,
+    /// `terminal_range`.
+    pub terminal_range: Option<(ConductorSize, ConductorSize)>,
+    /// `terminal`.
+    pub terminal: Option<ThermodynamicTemperature>,
+    /// `price` each.
+    pub price: Option<f64>,
+}
+
+/// `[[stock.lug]]`.
+#[derive(Clone, Debug)]
+pub struct StockLug {
+    /// Line in the file.
+    pub line: u32,
+    /// `size` of the conductor.
+    pub size: ConductorSize,
+    /// `stud`.
+    pub stud: Stud,
+    /// `price` each.
+    pub price: Option<f64>,
+}
