@@ -222,6 +222,18 @@ pub enum Error {
         #[allow(non_snake_case)]
         most_W: f64,
     },
+    /// No voltage satisfies a network: it cannot carry its constant-power loads.
+    #[error(
+        "no voltage carries the constant-power load of {asked_W:.0} W at node {node} and those beyond it; use larger \
+         cross-sections, shorter runs, less load or a higher voltage"
+    )]
+    Collapse {
+        /// Index of the node in the network.
+        node: usize,
+        /// Constant power asked at that node, in watts.
+        #[allow(non_snake_case)]
+        asked_W: f64,
+    },
     /// No size or rating that may be used passes every check.
     #[error("no {what} passes every check; {remedy}")]
     NoneFits {
@@ -262,6 +274,7 @@ impl Error {
             Self::NotTabulated { .. } => "not-tabulated",
             Self::Refused { .. } => "refused",
             Self::NoSolution { .. } => "no-solution",
+            Self::Collapse { .. } => "collapse",
             Self::NoneFits { .. } => "none-fits",
             Self::NotATree { .. } => "not-a-tree",
             Self::NotSettled { .. } => "not-settled",
