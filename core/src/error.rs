@@ -160,6 +160,22 @@ pub enum Error {
         /// Examples of what is accepted.
         accepted: &'static str,
     },
+    /// A comma, a second point or a thousands separator stands inside the number.
+    #[error("'{text}' has a separator inside its number; write digits and one point, such as {accepted}")]
+    Separator {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The text goes on after its number and unit.
+    #[error("'{text}' is more than one number and one unit; write {accepted}")]
+    MoreThanOne {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
     /// The text is none of the words that are known here.
     #[error("'{text}' is not known here; it must be one of {allowed}")]
     UnknownWord {
@@ -269,6 +285,8 @@ impl Error {
             Self::WrongUnit { .. } => "wrong-unit",
             Self::NotANumber { .. } => "not-a-number",
             Self::NotFinite { .. } => "not-finite",
+            Self::Separator { .. } => "separator",
+            Self::MoreThanOne { .. } => "more-than-one",
             Self::UnknownWord { .. } => "unknown-word",
             Self::TableEnds { .. } => "table-ends",
             Self::NotTabulated { .. } => "not-tabulated",
