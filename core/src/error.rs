@@ -3,6 +3,9 @@
 //! One `Copy` enum without owned text: it exists in every build, firmware included. The caller adds the
 //! place (which circuit, which line); the variants carry the numbers.
 
+// Unit suffixes keep the symbol's case.
+#![allow(non_snake_case)]
+
 use core::fmt;
 
 use crate::citation::Citation;
@@ -24,6 +27,12 @@ pub enum Allowed {
     Code(u8),
     /// As the sentence says.
     Words(&'static str),
+}
+
+impl Allowed {
+    const fn has_no_upper_end(&self) -> bool {
+        matches!(self, Self::Above(_) | Self::AtLeast(_))
+    }
 }
 
 impl fmt::Display for Allowed {
@@ -93,7 +102,11 @@ impl fmt::Debug for Snippet {
 #[non_exhaustive]
 pub enum Error {
     /// An input is NaN, infinite or outside its range.
-    #[error("{name} is {value}{}{unit}; it must be {allowed}", if unit.is_empty() { "" } else { " " })]
+    #[error(
+        "{name} is {value}{}{unit}; it must be {allowed}{}",
+        if unit.is_empty() { "" } else { " " },
+        if *value == f64::INFINITY && allowed.has_no_upper_end() { " and finite" } else { "" }
+    )]
     OutOfRange {
         /// The input, as the face spells it.
         name: &'static str,
@@ -227,15 +240,12 @@ pub enum Error {
     )]
     NoSolution {
         /// Power asked, in watts.
-        #[allow(non_snake_case)]
         asked_W: f64,
         /// Voltage at the source, in volts.
-        #[allow(non_snake_case)]
         source_V: f64,
         /// Loop resistance, in ohms.
         loop_ohm: f64,
         /// The most that can be delivered, in watts.
-        #[allow(non_snake_case)]
         most_W: f64,
     },
     /// No voltage satisfies a network: it cannot carry its constant-power loads.
@@ -263,6 +273,16 @@ pub enum Error {
     NotATree {
         /// What is wrong, and what to do.
         what: &'static str,
+    },
+    /// A face passed another count of numbers than the calculation takes.
+    #[error("{given} {what} are given; the calculation needs {needed}")]
+    WrongCount {
+        /// What was counted: `inputs`, `outputs`.
+        what: &'static str,
+        /// How many there are.
+        given: usize,
+        /// How many it takes.
+        needed: usize,
     },
     /// An iteration did not reach its tolerance.
     #[error("{what} did not settle within {steps} steps; check the inputs for values far from practice")]
@@ -295,6 +315,7 @@ impl Error {
             Self::Collapse { .. } => "collapse",
             Self::NoneFits { .. } => "none-fits",
             Self::NotATree { .. } => "not-a-tree",
+            Self::WrongCount { .. } => "wrong-count",
             Self::NotSettled { .. } => "not-settled",
         }
     }
