@@ -83,6 +83,9 @@ pub struct Insulation {
 }
 
 impl Insulation {
+    /// PVC for 60 °C: the lowest rating there is.
+    pub const PVC_60: Self = Self { compound: Compound::Pvc, rating_degC: 60.0 };
+
     /// Insulation of a compound, for a greatest conductor temperature in normal service: PVC 60 … 105 °C, XLPE
     /// 75 … 150 °C, rubber 60 … 105 °C, silicone 150 … 200 °C.
     ///

@@ -511,7 +511,9 @@ impl Facts<'_> {
             return missing("withstand of the conductor: the greatest prospective current is not known");
         };
         let area = self.thinner.size.area_mm2();
-        let k = adiabatic_k(self.thinner.material, self.thinner.insulation, area);
+        let Ok(k) = adiabatic_k(self.thinner.material, self.thinner.insulation, self.thinner.size) else {
+            return missing("withstand of the conductor: no k of its material is held");
+        };
         let bearable = k.value * k.value * area * area;
         let amps = fault.get::<ampere>();
         if let Some(stated) = guard.let_through_A2s {

@@ -12,6 +12,7 @@ mod overrides;
 mod query;
 mod table;
 mod us;
+mod usual;
 
 pub use answer::Rules;
 pub use book::{
