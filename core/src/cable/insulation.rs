@@ -56,9 +56,8 @@ impl Compound {
     #[allow(non_snake_case)]
     pub const fn ratings_degC(self) -> (f64, f64) {
         match self {
-            Self::Pvc => (60.0, 105.0),
+            Self::Pvc | Self::Rubber => (60.0, 105.0),
             Self::Xlpe => (75.0, 150.0),
-            Self::Rubber => (60.0, 105.0),
             Self::Silicone => (150.0, 200.0),
         }
     }
@@ -289,4 +288,103 @@ pub fn adiabatic_k(
         Some((value, citation)) => AdiabaticK { value, citation },
         None => AdiabaticK { value: formula, citation: ADIABATIC_FORMULA },
     })
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use std::format;
+    use std::string::ToString;
+
+    fn mm2(size: f64) -> ConductorSize {
+        ConductorSize::mm2(size).unwrap()
+    }
+
+    #[test]
+    fn text_form_comes_back() {
+        for text in ["PVC 70 degC", "PVC 105 degC", "XLPE 90 degC", "rubber 60 degC", "silicone 180 degC"] {
+            assert_eq!(text.parse::<Insulation>().unwrap().to_string(), text);
+        }
+        for text in [" PVC  70 degC ", "PVC 70degC", "PVC 70 °C", "PVC 70.0 degC"] {
+            assert_eq!(text.parse(), Insulation::new(Compound::Pvc, 70.0), "{text}");
+        }
+        assert_eq!("EPR 90 degC".parse(), Insulation::new(Compound::Xlpe, 90.0));
+    }
+
+    #[test]
+    fn what_is_wrong_with_a_text_is_said() {
+        for (text, slug) in [
+            ("", "unknown-word"),
+            ("PVC", "unknown-word"),
+            ("PVC degC", "unknown-word"),
+            ("pvc 70 degC", "unknown-word"),
+            ("PVC -70 degC", "unknown-word"),
+            ("PVC 7.0.0 degC", "unknown-word"),
+            ("PVC 70", "no-unit"),
+            ("PVC 70 degF", "unknown-unit"),
+            ("PVC 70 degC 90", "unknown-unit"),
+            ("PVC 59.9 degC", "out-of-range"),
+            ("XLPE 200 degC", "out-of-range"),
+        ] {
+            assert_eq!(text.parse::<Insulation>().unwrap_err().slug(), slug, "{text}");
+        }
+        assert_eq!(
+            "PVC 180 degC".parse::<Insulation>().unwrap_err().to_string(),
+            "rating of PVC insulation is 180 degC; it must be between 60 and 105"
+        );
+        for rating in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, 0.0] {
+            assert!(Insulation::new(Compound::Rubber, rating).is_err());
+        }
+    }
+
+    #[test]
+    fn pvc_above_300_mm2_may_reach_less() {
+        let pvc = Insulation::new(Compound::Pvc, 70.0).unwrap();
+        assert_eq!(pvc.short_circuit_degC(mm2(300.0)), 160.0);
+        assert_eq!(pvc.short_circuit_degC(mm2(400.0)), 140.0);
+        assert_eq!(adiabatic_k(Material::Copper, pvc, mm2(400.0)).unwrap().value, 103.0);
+    }
+
+    #[test]
+    fn untabled_ratings_follow_the_formula_and_fall_between_their_neighbours() {
+        let k = |rating| {
+            let pvc = Insulation::new(Compound::Pvc, rating).unwrap();
+            adiabatic_k(Material::Copper, pvc, mm2(16.0)).unwrap()
+        };
+        // 226·√ln(1 + 85/309.5), evaluated independently.
+        assert!((k(75.0).value - 111.329042463705).abs() < 1e-9, "{}", k(75.0).value);
+        assert_eq!(k(75.0).citation.seen, Seen::Derived);
+        assert!(k(90.0).value < k(75.0).value && k(75.0).value < k(70.0).value);
+        assert!(k(105.0).value < k(90.0).value);
+    }
+
+    #[test]
+    fn a_recalled_cell_never_beats_the_formula() {
+        for compound in Compound::ALL {
+            let (least, most) = compound.ratings_degC();
+            for rating in [least, 70.0, 85.0, 90.0, 180.0, most] {
+                let Ok(insulation) = Insulation::new(compound, rating) else { continue };
+                for material in [Material::Copper, Material::Aluminium] {
+                    let k = adiabatic_k(material, insulation, mm2(16.0)).unwrap();
+                    assert!(k.value > 50.0, "{insulation} {material:?}");
+                    if k.citation.seen == Seen::Recalled {
+                        let beta = if material == Material::Copper { 234.5 } else { 228.0 };
+                        let constant = if material == Material::Copper { 226.0 } else { 148.0 };
+                        let end = insulation.short_circuit_degC(mm2(16.0));
+                        let formula = constant * sqrt(libm::log((beta + end) / (beta + rating)));
+                        assert!(k.value <= formula + 1e-9, "{insulation} {material:?}");
+                    }
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn copper_clad_aluminium_has_no_k() {
+        let pvc = Insulation::new(Compound::Pvc, 70.0).unwrap();
+        let error = adiabatic_k(Material::CopperCladAluminium, pvc, mm2(16.0)).unwrap_err();
+        assert_eq!(error.slug(), "not-tabulated");
+        assert!(format!("{error}").contains("copper-clad"));
+    }
 }

@@ -64,3 +64,35 @@ pub fn terminal_takes((least, most): (ConductorSize, ConductorSize), size: Condu
     let area = size.area_mm2();
     least.area_mm2() <= area && area <= most.area_mm2()
 }
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use std::string::ToString;
+
+    #[test]
+    fn studs_come_back_from_their_text() {
+        for stud in Stud::ALL {
+            assert_eq!(stud.to_string().parse(), Ok(stud));
+        }
+        for text in ["", "M", "8", "m8", "M7", "M08", "M+8", "M8x1.25", "M256", "M-8"] {
+            assert_eq!(text.parse::<Stud>().unwrap_err().slug(), "unknown-word", "{text}");
+        }
+    }
+
+    #[test]
+    fn a_lug_fits_its_own_stud_only() {
+        assert!(lug_fits(Stud(8), Stud(8)));
+        assert!(!lug_fits(Stud(6), Stud(8)));
+        assert!(!lug_fits(Stud(10), Stud(8)));
+    }
+
+    #[test]
+    fn terminal_range_includes_both_ends() {
+        let mm2 = |s| ConductorSize::mm2(s).unwrap();
+        let range = (mm2(2.5), mm2(35.0));
+        assert!(terminal_takes(range, mm2(2.5)) && terminal_takes(range, mm2(35.0)));
+        assert!(!terminal_takes(range, mm2(1.5)) && !terminal_takes(range, mm2(50.0)));
+    }
+}

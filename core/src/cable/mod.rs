@@ -10,7 +10,7 @@ mod series;
 
 pub use conductor::{Class, Coating, Conductor, Material};
 pub use insulation::{ADIABATIC_K, AdiabaticK, AdiabaticRow, Compound, Insulation, adiabatic_k};
-pub use joint::{JointKind, joint_resistance};
+pub use joint::{GENERIC_JOINT, JointKind, joint_heat, joint_resistance, rated_joint_resistance};
 pub use lug::{Stud, lug_fits, terminal_takes};
 pub use resistance::{
     ALUMINIUM_OHM_MM2_PER_M, ALUMINIUM_ZERO_degC, COPPER_ALPHA_75_PER_K, COPPER_CLAD_OHM_MM2_PER_M,

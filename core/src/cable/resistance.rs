@@ -125,7 +125,8 @@ pub fn linear_resistance_with_source(
     Ok((per_meter(value), ResistanceSource { citation }))
 }
 
-/// The least resistance a conductor of that size can have: resistivity over the full nominal area.
+/// The least resistance a conductor of that size can have: resistivity over the full nominal area, or the printed
+/// figure where its rounding lies lower.
 ///
 /// For the greatest prospective current (R6): printed maxima would make it look smaller than it may be.
 ///
@@ -134,17 +135,36 @@ pub fn linear_resistance_with_source(
 ///
 /// # Source
 /// IEC 60028:1925, 1/58 Ω·mm²/m at 20 °C.
+///
+/// # Example
+/// 16 mm² at 20 °C: 1/58/16 = 1.078 Ω/km, where the class 5 maximum is 1.21 Ω/km.
+/// ```
+/// # use ampwright::cable::*;
+/// # use ampwright::quantity::{ConductorSize, ThermodynamicTemperature};
+/// # use uom::si::thermodynamic_temperature::degree_celsius;
+/// let conductor = Conductor {
+///     size: ConductorSize::mm2(16.0)?,
+///     material: Material::Copper,
+///     class: Class::Flexible,
+///     coating: Coating::Plain,
+///     insulation: Insulation::new(Compound::Pvc, 70.0)?,
+/// };
+/// let (least, _) = least_linear_resistance(&conductor, ThermodynamicTemperature::new::<degree_celsius>(20.0))?;
+/// assert!((least.value * 1000.0 - 1.0776).abs() < 1e-4);
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn least_linear_resistance(
     conductor: &Conductor,
     temperature: ThermodynamicTemperature,
 ) -> Result<(LinearResistance, ResistanceSource), Error> {
-    let celsius = checked_celsius(temperature)?;
+    let greatest = linear_resistance_with_source(conductor, temperature)?;
     let citation = match conductor.material {
         Material::Copper => LEAST_FROM_AREA,
         Material::Aluminium => ALUMINIUM_FROM_AREA,
         Material::CopperCladAluminium => COPPER_CLAD_FROM_AREA,
     };
-    Ok((per_meter(from_area(conductor, celsius)), ResistanceSource { citation }))
+    let full_area = per_meter(from_area(conductor, checked_celsius(temperature)?));
+    Ok(if full_area <= greatest.0 { (full_area, ResistanceSource { citation }) } else { greatest })
 }
 
 /// Resistivity of the conductor's metal at a temperature, without any allowance.
@@ -256,4 +276,135 @@ fn ohm_mm2_per_m(material: Material, celsius: f64) -> f64 {
 
 fn per_meter(ohm_per_m: f64) -> LinearResistance {
     ElectricalResistance::new::<ohm>(ohm_per_m) / Length::new::<meter>(1.0)
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::super::series::{AWG_SERIES, METRIC_SERIES, awg, mm2};
+    use super::super::{Compound, Insulation};
+    use super::*;
+    use crate::quantity::ConductorSize;
+    use std::string::ToString;
+
+    const CLASSES: [Class; 4] = [Class::Solid, Class::Stranded, Class::Flexible, Class::ExtraFlexible];
+    const COATINGS: [Coating; 2] = [Coating::Plain, Coating::Tinned];
+    const METALS: [Material; 3] = [Material::Copper, Material::Aluminium, Material::CopperCladAluminium];
+
+    fn conductor(size: ConductorSize, class: Class) -> Conductor {
+        Conductor {
+            size,
+            material: Material::Copper,
+            class,
+            coating: Coating::Plain,
+            insulation: Insulation::new(Compound::Pvc, 70.0).unwrap(),
+        }
+    }
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+
+    fn ohm_per_km(conductor: &Conductor, celsius: f64) -> f64 {
+        linear_resistance(conductor, at(celsius)).unwrap().value * 1000.0
+    }
+
+    #[test]
+    fn tabled_sizes_give_the_printed_figure_at_the_printed_temperature() {
+        assert!((ohm_per_km(&conductor(mm2(35.0), Class::Flexible), 20.0) - 0.554).abs() < 1e-12);
+        assert!((ohm_per_km(&conductor(mm2(70.0), Class::Stranded), 20.0) - 0.268).abs() < 1e-12);
+        let six = conductor(awg(6), Class::Stranded);
+        assert!((ohm_per_km(&six, 75.0) - 0.491 / 0.3048).abs() < 1e-12);
+        // R2 = R1·[1 + 0.00323·(t − 75)].
+        assert!((ohm_per_km(&six, 25.0) - 0.491 / 0.3048 * (1.0 - 0.00323 * 50.0)).abs() < 1e-12);
+    }
+
+    #[test]
+    fn flexible_awg_is_never_below_its_stranded_row() {
+        for size in AWG_SERIES {
+            let stranded = ohm_per_km(&conductor(size, Class::Stranded), 75.0);
+            for class in [Class::Flexible, Class::ExtraFlexible] {
+                assert!(ohm_per_km(&conductor(size, class), 75.0) >= stranded, "{size}");
+            }
+        }
+    }
+
+    #[test]
+    fn untabled_sizes_lie_between_their_neighbours() {
+        let r = |size, class| ohm_per_km(&conductor(size, class), 20.0);
+        assert!(r(mm2(30.0), Class::Flexible) > r(mm2(35.0), Class::Flexible));
+        assert!(r(mm2(30.0), Class::Flexible) < r(mm2(25.0), Class::Flexible));
+        let odd = linear_resistance_with_source(&conductor(mm2(30.0), Class::Flexible), at(20.0)).unwrap();
+        assert_eq!(odd.1.citation.seen, Seen::Derived);
+        assert!(
+            r(awg(9), Class::Solid) < r(awg(10), Class::Solid)
+                && r(awg(9), Class::Solid) > r(awg(8), Class::Solid)
+        );
+    }
+
+    #[test]
+    fn thicker_hotter_and_least_are_ordered_whatever_the_conductor() {
+        let runs = [&METRIC_SERIES[..], &AWG_SERIES[..]].into_iter();
+        for (series, class) in runs.flat_map(|series| CLASSES.map(|class| (series, class))) {
+            for coating in COATINGS {
+                for material in METALS {
+                    let of = |size| Conductor { material, coating, ..conductor(size, class) };
+                    for pair in series.windows(2) {
+                        assert!(
+                            ohm_per_km(&of(pair[1]), 20.0) < ohm_per_km(&of(pair[0]), 20.0),
+                            "{} {class:?} {coating:?} {material:?}",
+                            pair[1]
+                        );
+                    }
+                    for &size in series {
+                        let of = of(size);
+                        assert!(ohm_per_km(&of, 90.0) > ohm_per_km(&of, -40.0));
+                        for celsius in [-80.0, -40.0, 20.0, 250.0] {
+                            let least = least_linear_resistance(&of, at(celsius)).unwrap().0;
+                            let most = linear_resistance(&of, at(celsius)).unwrap();
+                            assert!(least.value > 0.0 && least <= most, "{size} {class:?} at {celsius}");
+                        }
+                    }
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn tinned_is_never_below_plain() {
+        for class in CLASSES {
+            for size in METRIC_SERIES.into_iter().chain(AWG_SERIES) {
+                let plain = conductor(size, class);
+                let tinned = Conductor { coating: Coating::Tinned, ..plain };
+                assert!(ohm_per_km(&tinned, 20.0) > ohm_per_km(&plain, 20.0), "{size} {class:?}");
+            }
+        }
+    }
+
+    #[test]
+    fn recalled_cells_say_so() {
+        let seen = |size, class| {
+            linear_resistance_with_source(&conductor(size, class), at(20.0)).unwrap().1.citation.seen
+        };
+        assert_eq!(seen(mm2(35.0), Class::Flexible), Seen::Recalled);
+        assert_eq!(seen(mm2(25.0), Class::Flexible), Seen::Page);
+        assert_eq!(seen(mm2(25.0), Class::ExtraFlexible), Seen::Recalled);
+        assert_eq!(seen(awg(2), Class::Stranded), Seen::Recalled);
+        assert_eq!(seen(awg(6), Class::Stranded), Seen::Page);
+    }
+
+    #[test]
+    fn temperature_outside_the_range_is_named_in_the_error() {
+        let conductor = conductor(mm2(16.0), Class::Flexible);
+        for odd in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -80.5, 250.5, -300.0] {
+            let error = linear_resistance(&conductor, at(odd)).unwrap_err();
+            assert_eq!(error.slug(), "out-of-range");
+            assert!(error.to_string().starts_with("conductor temperature is "), "{error}");
+            assert!(least_linear_resistance(&conductor, at(odd)).is_err());
+            assert!(resistivity(Material::Copper, at(odd)).is_err());
+        }
+        for edge in [-80.0, 250.0] {
+            assert!(linear_resistance(&conductor, at(edge)).is_ok(), "{edge}");
+        }
+    }
 }

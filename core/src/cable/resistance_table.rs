@@ -208,6 +208,7 @@ pub const TABLE_8_SOLID: ResistanceTable = ResistanceTable {
 /// Source: NFPA 70-2023, Chapter 9, Table 8. Uncoated column read on a page up to 500 kcmil but for 2 AWG;
 /// the rest recalled. The per-1000-ft column is held because it is the one that was seen.
 /// Equal to `nec-ch9-table-8-stranded` in `tests/reference/conductors.toml` (tested there).
+#[allow(clippy::approx_constant)] // 3.14 Ω/kft is 14 AWG as printed, not π
 pub const TABLE_8_STRANDED: ResistanceTable = ResistanceTable {
     id: "nec-ch9-table-8-stranded",
     citation: TABLE_8,

@@ -165,3 +165,76 @@ impl FromStr for Family {
             .ok_or(Error::UnknownWord { text: Snippet::new(text), allowed })
     }
 }
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use std::string::ToString;
+
+    #[test]
+    fn every_family_has_its_own_data_and_comes_back_from_its_word() {
+        for family in Family::ALL {
+            let data = family.data();
+            assert_eq!(data.family, family);
+            assert_eq!(data.word.parse(), Ok(family));
+            assert_eq!(family.to_string(), data.word);
+            let error = "fast".parse::<Family>().unwrap_err().to_string();
+            assert!(error.contains(data.word), "{error}");
+        }
+        for text in ["", "gg", "GG", "class t", "Class T", "breaker", "gG fuse"] {
+            assert!(text.parse::<Family>().is_err(), "{text}");
+        }
+    }
+
+    #[test]
+    fn ratings_ascend_and_are_positive() {
+        for family in Family::ALL {
+            let ratings = family.ratings_A();
+            assert!(ratings.first().is_some_and(|least| *least > 0.0), "{family}");
+            assert!(ratings.is_sorted_by(|a, b| a < b), "{family}");
+        }
+    }
+
+    #[test]
+    fn what_must_not_operate_lies_below_what_must() {
+        for family in Family::ALL {
+            for &amperes in family.ratings_A() {
+                let rating = ElectricCurrent::new::<ampere>(amperes);
+                let (lower, upper) = (family.non_operating_ratio(rating), family.operating_ratio(rating));
+                assert_eq!(lower.is_some(), upper.is_some(), "{family} {amperes} A");
+                if let (Some(lower), Some(upper)) = (lower, upper) {
+                    assert!((1.0..upper).contains(&lower) && upper <= 2.1, "{family} {amperes} A");
+                }
+            }
+            assert!(
+                family.data().continuous_ratio <= 1.0 && family.data().continuous_ratio >= 0.8,
+                "{family}"
+            );
+        }
+    }
+
+    #[test]
+    fn a_family_for_short_circuit_only_has_no_conventional_current() {
+        assert!(!Family::Ar.data().overload);
+        assert_eq!(Family::Ar.operating_ratio(ElectricCurrent::new::<ampere>(100.0)), None);
+        // Overload devices without a figure: the check is not made, it is not passed.
+        for family in [Family::BoltedStrip, Family::Supplementary] {
+            assert!(family.data().overload);
+            assert_eq!(family.operating_ratio(ElectricCurrent::new::<ampere>(50.0)), None);
+        }
+    }
+
+    #[test]
+    fn only_miniature_breakers_have_a_fixed_instantaneous_edge() {
+        for family in Family::ALL {
+            let edge = match family {
+                Family::MiniatureB => Some(7.0),
+                Family::MiniatureC => Some(15.0),
+                _ => None,
+            };
+            assert_eq!(family.instantaneous_ratio(), edge, "{family}");
+            assert!(edge.is_none() || !family.data().is_fuse);
+        }
+    }
+}

@@ -67,3 +67,38 @@ impl Device {
         Some(self.rating * self.family.operating_ratio(self.rating)?)
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use uom::si::electric_current::ampere;
+
+    fn device(family: Family, amperes: f64) -> Device {
+        Device {
+            family,
+            rating: ElectricCurrent::new::<ampere>(amperes),
+            supply: Supply::NotStated,
+            breaking: None,
+            polarity: Polarity::None,
+            full_rated: false,
+        }
+    }
+
+    #[test]
+    fn eight_tenths_unless_marked_for_full_rating() {
+        let breaker = device(Family::MoldedCase, 100.0);
+        assert_eq!(breaker.continuous_current(), ElectricCurrent::new::<ampere>(80.0));
+        let marked = Device { full_rated: true, ..breaker };
+        assert_eq!(marked.continuous_current(), marked.rating);
+        let fuse = device(Family::Gg, 100.0);
+        assert_eq!(fuse.continuous_current(), fuse.rating);
+    }
+
+    #[test]
+    fn operating_current_is_none_without_a_figure() {
+        assert_eq!(device(Family::Ar, 100.0).operating_current(), None);
+        assert_eq!(device(Family::ClassT, 800.0).operating_current(), None);
+        let odd = device(Family::Gg, f64::NAN);
+        assert_eq!(odd.operating_current(), None);
+    }
+}
