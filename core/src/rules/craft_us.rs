@@ -117,8 +117,8 @@ const SIZES: &[ConductorSize] = &[
 
 const INCH: f64 = 0.0254;
 
-const fn unfused(inches: f64) -> Option<Limit<f64>> {
-    Some(Limit { value: inches * INCH, citation: cite("183.455; ABYC E-11", Seen::Recalled) })
+const fn unfused(inches: f64) -> Limit<f64> {
+    Limit { value: inches * INCH, citation: cite("183.455; ABYC E-11", Seen::Recalled) }
 }
 
 static TABLES: &[&AmpacityTable] = &[&TABLE_5];
@@ -206,7 +206,11 @@ pub(super) static SET: RuleSet = RuleSet {
             Seen::Practice,
         ),
     },
-    unfused: UnfusedRule { plain: unfused(7.0), sheathed: unfused(40.0), sheathed_from_post: unfused(72.0) },
+    unfused: UnfusedRule {
+        plain: Some(unfused(7.0)),
+        sheathed: Some(unfused(40.0)),
+        sheathed_from_post: Some(unfused(72.0)),
+    },
     drop: DropRule {
         critical: Limit { value: 0.03, citation: abyc("voltage drop, 3 % circuits", Seen::Page) },
         lighting: Limit { value: 0.1, citation: abyc("voltage drop, 10 % circuits", Seen::Page) },

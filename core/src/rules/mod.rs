@@ -3,6 +3,7 @@
 // Unit suffixes keep the symbol's own case: `_A`, `_degC`.
 #![allow(non_snake_case)]
 
+mod ampacity;
 mod answer;
 mod book;
 mod craft_iso;
