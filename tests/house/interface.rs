@@ -254,10 +254,10 @@ fn leaves(tree: &UseTree, path: &mut Vec<String>, found: &mut Vec<(Vec<String>, 
         }
         UseTree::Group(g) => g.items.iter().for_each(|tree| leaves(tree, path, found)),
         UseTree::Name(n) => {
-            found.push(([path.as_slice(), &[n.ident.to_string()]].concat(), n.ident.to_string()))
+            found.push(([path.as_slice(), &[n.ident.to_string()]].concat(), n.ident.to_string()));
         }
         UseTree::Rename(r) => {
-            found.push(([path.as_slice(), &[r.ident.to_string()]].concat(), r.rename.to_string()))
+            found.push(([path.as_slice(), &[r.ident.to_string()]].concat(), r.rename.to_string()));
         }
         UseTree::Glob(_) => found.push(([path.as_slice(), &["*".to_owned()]].concat(), "*".to_owned())),
     }

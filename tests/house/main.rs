@@ -33,6 +33,12 @@ fn files() -> Vec<String> {
     list.lines().filter(|path| root().join(path).is_file()).map(str::to_owned).collect()
 }
 
+/// Rust files below a directory.
+fn rust_files(directory: &str) -> Vec<String> {
+    let is_rust = |path: &String| Path::new(path).extension().is_some_and(|e| e == "rs");
+    files().into_iter().filter(|path| path.starts_with(directory) && is_rust(path)).collect()
+}
+
 /// Standard output of a command run in the top directory; it must succeed.
 fn output(command: &mut Command) -> String {
     let done = command.current_dir(root()).output().unwrap_or_else(|e| panic!("{command:?}: {e}"));

@@ -2,7 +2,7 @@
 
 use std::process::Command;
 
-use crate::{compare_committed, output, root};
+use crate::{compare_committed, output, root, text};
 
 #[test]
 fn the_c_header_is_what_its_source_gives() {
@@ -19,6 +19,19 @@ fn the_c_header_is_what_its_source_gives() {
 }
 
 #[test]
+fn every_status_has_a_text() {
+    let header = text("bindings-c/include/ampwright.h");
+    let names: Vec<_> =
+        header.lines().filter_map(|l| l.trim().strip_prefix("AW_STATUS_")?.split_once(" = ")).collect();
+    assert!(names.len() > 3, "the header has another form than this test reads: {names:?}");
+    // However rustfmt breaks the lines of the table.
+    let source = text("bindings-c/src/status.rs").split_whitespace().collect::<String>();
+    for (name, _) in names {
+        assert!(source.contains(&format!("(Status::AW_STATUS_{name},c\"")), "no text for AW_STATUS_{name}");
+    }
+}
+
+#[test]
 fn packages_hold_what_is_listed() {
     let mut listing =
         String::from("# Made by `tests/run regenerate`: files of the packages that may be published.\n");
@@ -29,7 +42,8 @@ fn packages_hold_what_is_listed() {
         let ours = list
             .lines()
             .filter(|file| ![".cargo_vcs_info.json", "Cargo.toml.orig", "Cargo.lock"].contains(file));
-        listing += &format!("\n[{package}]\n{}\n", ours.collect::<Vec<_>>().join("\n"));
+        let ours: Vec<_> = ours.collect();
+        listing = [listing, format!("\n[{package}]\n{}\n", ours.join("\n"))].concat();
     }
     compare_committed("tests/house/packages.txt", &listing);
 }
