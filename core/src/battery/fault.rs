@@ -139,6 +139,40 @@ pub const fn resistance_rise(chemistry: Chemistry) -> ResistanceRise {
     }
 }
 
+/// Voltage behind the resistance of a bank in a fault, per cell: at most and at least.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct FaultVoltage {
+    /// Full and just charged, V a cell.
+    pub greatest_V: f64,
+    /// Empty and rested, V a cell.
+    pub least_V: f64,
+    /// Source.
+    pub citation: Citation,
+}
+
+/// Voltage per cell that drives the greatest and the least prospective current (R6).
+///
+/// Lead-acid 2.2 V is the figure of the case `dc-battery-short-circuit-one` in `tests/reference/cases-conductors.toml`
+/// (page seen), 1.98 V the empty cell of `lead-acid-ocv-soc-flooded` (page seen); the other chemistries recalled.
+///
+/// ```
+/// # use ampwright::battery::{Chemistry, fault_voltage};
+/// assert_eq!(fault_voltage(Chemistry::Flooded).greatest_V, 2.2);
+/// ```
+pub const fn fault_voltage(chemistry: Chemistry) -> FaultVoltage {
+    let recalled = Citation::new("typical cell sheets", "rest voltage, full and empty", Seen::Recalled);
+    match chemistry {
+        Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel => FaultVoltage {
+            greatest_V: 2.2,
+            least_V: 1.98,
+            citation: Citation::new("low-voltage DC distribution guide", "short-circuit chapter", Seen::Page),
+        },
+        Chemistry::Lfp => FaultVoltage { greatest_V: 3.4, least_V: 2.5, citation: recalled },
+        Chemistry::Nmc => FaultVoltage { greatest_V: 4.2, least_V: 3.0, citation: recalled },
+        Chemistry::NickelCadmium => FaultVoltage { greatest_V: 1.45, least_V: 1.0, citation: recalled },
+    }
+}
+
 fn above_zero(name: &'static str, value: f64, unit: &'static str) -> Result<f64, Error> {
     // Written so that NaN fails.
     if !(value > 0.0 && value <= f64::MAX) {

@@ -9,6 +9,4 @@ pub use charge::{
     discharge_current_limit, discharge_limit,
 };
 pub use chemistry::Chemistry;
-pub use fault::{
-    ResistanceRise, ShortCircuitEstimate, bank_resistance, resistance_rise, short_circuit_estimate,
-};
+pub use fault::{FaultVoltage, ResistanceRise, ShortCircuitEstimate, bank_resistance, resistance_rise, short_circuit_estimate, fault_voltage};

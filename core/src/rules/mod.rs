@@ -10,6 +10,7 @@ mod craft_iso;
 mod craft_us;
 mod iec;
 mod overrides;
+mod practice;
 mod query;
 mod table;
 mod us;
@@ -21,6 +22,7 @@ pub use book::{
     NextRating, Placement, ProtectiveRule, RuleSet, TerminalRule, UnfusedRule,
 };
 pub use overrides::{Overridden, Overrides, OwnValue};
+pub use practice::{PracticeFigure, practice_figure};
 pub use query::{
     Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
     LoadUse, Space, Terms,

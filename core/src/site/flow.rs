@@ -20,7 +20,7 @@ use crate::network::{
     FaultNode, FaultState, NodeLoad, NodeState, Source, TreeNode, prospective, solve,
 };
 use crate::quantity::{
-    ElectricCurrent, ElectricPotential, ElectricalResistance, Power, ThermodynamicTemperature,
+    ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, ThermodynamicTemperature,
 };
 use crate::rules::LoadUse;
 
@@ -355,11 +355,14 @@ fn loop_ohms(site: &Site, wired: &[Wired], index: usize, at_degC: Option<f64>) -
     let Some((circuit, (positive, negative, joints))) = site.circuits.get(index).zip(wired.get(index)) else {
         return 0.0;
     };
-    let of = |conductor: &Conductor, length| {
+    let of = |conductor: &Conductor, length: Length| -> f64 {
         let at = ThermodynamicTemperature::new::<degree_celsius>(
             at_degC.unwrap_or_else(|| conductor.insulation.rating_degC()),
         );
-        linear_resistance(conductor, at).map_or(0.0, |r| (r * length).get::<ohm>())
+        linear_resistance(conductor, at).map_or(0.0, |r| {
+            let run: ElectricalResistance = r * length;
+            run.get::<ohm>()
+        })
     };
     let back = match circuit.way_back {
         Return::Chassis(Some(stated)) => stated.get::<ohm>(),
@@ -373,8 +376,11 @@ fn cold_ohms(site: &Site, wired: &[Wired], index: usize) -> f64 {
     let Some((circuit, (positive, negative, _))) = site.circuits.get(index).zip(wired.get(index)) else {
         return 0.0;
     };
-    let of = |conductor: &Conductor, length| {
-        least_linear_resistance(conductor, site.ambient.0).map_or(0.0, |(r, _)| (r * length).get::<ohm>())
+    let of = |conductor: &Conductor, length: Length| -> f64 {
+        least_linear_resistance(conductor, site.ambient.0).map_or(0.0, |(r, _)| {
+            let run: ElectricalResistance = r * length;
+            run.get::<ohm>()
+        })
     };
     let back = match circuit.way_back {
         Return::Conductor => of(negative, circuit.negative_length),

@@ -19,7 +19,7 @@ use super::flow::{Flow, Flows};
 use super::graph::{Graph, Tree};
 use super::model::{CircuitEntry, DeviceEntry, Return, Site};
 use super::read::{Problem, Problems};
-use crate::cable::{Class, Coating, Conductor, JointKind, Material, joint_resistance};
+use crate::cable::{Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance};
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
 use crate::device::{Device, Family, Polarity, Supply};
 use crate::error::Error;
@@ -114,7 +114,7 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         }
     }
     if !problems.is_empty() {
-        return Err(Problems(problems));
+        return Err(Problems(problems, 0));
     }
     let feeding = feeding_ends(site, &trees);
 
@@ -134,24 +134,27 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         }
         let planned = match judge_all(site, &trees, &offers, &drafts, &feeding, &flows) {
             Ok(planned) => planned,
-            Err(problem) => return Err(Problems(vec![problem])),
+            Err(problem) => return Err(Problems(vec![problem], 0)),
         };
+        for ((draft, circuit), done) in drafts.iter_mut().zip(&site.circuits).zip(&planned) {
+            draft.joints = joints(circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
+        }
         temperatures = planned
             .iter()
             .map(|p| p.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>()))
             .collect();
         match enlarge(site, &trees, &offers, &mut drafts, &planned)? {
             true => settled = false,
-            // Once more with the temperatures of this pass, so that what is reported is what was judged.
+            // Once more with the temperatures and devices of this pass: what is reported is what was judged.
             false if !settled => settled = true,
             false => return Ok(Plan { trees, circuits: planned, collapsed: flows.collapsed }),
         }
     }
-    Err(Problems(vec![Problem {
+    Err(Problems(alloc::vec![Problem {
         line: 0,
         place: "design".to_string(),
         text: "the design did not settle; state the sizes of some circuits".to_string(),
-    }]))
+    }], 0))
 }
 
 /// Where the network collapses: enlarges the designed run of the greatest resistance on the path. `None` where
@@ -565,7 +568,7 @@ impl Offers {
                 (*first, *first, Some(0))
             }
         };
-        Ok(Draft { positive, negative, offered, refused: Vec::new(), joints: joints(circuit) })
+        Ok(Draft { positive, negative, offered, refused: Vec::new(), joints: joints(circuit, &[]) })
     }
 
     /// The device that suits a run: the first offer, in the order of the stock, whose smallest sufficient rating
@@ -623,30 +626,30 @@ impl Offers {
     }
 }
 
-/// All joints of a circuit: stated ones, else a lug at each of four conductor ends; and its parts and devices.
-fn joints(circuit: &CircuitEntry) -> ElectricalResistance {
+/// All joints of a circuit: stated ones, else a lug at each of four conductor ends; its parts; its devices as fitted.
+fn joints(circuit: &CircuitEntry, fitted: &[Fitted]) -> ElectricalResistance {
     let mut sum = ElectricalResistance::new::<ohm>(0.0);
     if circuit.joints.is_empty() {
-        sum += 4.0 * joint_resistance(JointKind::Lug, None);
+        sum += 4.0 * joint_resistance(JointKind::Lug);
     }
     for joint in &circuit.joints {
-        let each = joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind, None));
-        sum += f64::from(joint.count) * each;
+        sum += f64::from(joint.count) * joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind));
     }
     for part in &circuit.parts {
-        sum += part.resistance.unwrap_or_else(|| joint_resistance(part.kind.joint(), part.rating));
+        sum += part.resistance.unwrap_or_else(|| rated(part.kind.joint(), part.rating));
     }
-    for device in &circuit.devices {
-        let kind = match device.family {
-            Some(family) if !family.data().is_fuse => JointKind::Breaker,
-            _ => JointKind::Fuse,
-        };
-        sum += joint_resistance(kind, device.rating);
-    }
-    if circuit.devices.is_empty() && !circuit.no_device {
-        sum += joint_resistance(JointKind::Fuse, None);
+    for device in fitted.iter().map(|f| f.guard.device) {
+        let kind = if device.family.data().is_fuse { JointKind::Fuse } else { JointKind::Breaker };
+        sum += rated(kind, Some(device.rating));
     }
     sum
+}
+
+/// Generic resistance of a part, by its rating where that is known.
+fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
+    rating
+        .and_then(|rating| rated_joint_resistance(kind, rating).ok())
+        .unwrap_or_else(|| joint_resistance(kind))
 }
 
 /// Enlarges what fails; `true` where something grew.
@@ -716,7 +719,7 @@ fn enlarge(
             }
         }
     }
-    if problems.is_empty() { Ok(grew) } else { Err(Problems(problems)) }
+    if problems.is_empty() { Ok(grew) } else { Err(Problems(problems, 0)) }
 }
 
 /// Whether a larger conductor mends a failed check.

@@ -334,7 +334,7 @@ impl Place<'_> {
     fn joints(&self, found: &mut Findings) {
         let amps = self.planned.judgement.current.get::<ampere>();
         for joint in &self.circuit.joints {
-            let each = joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind, None));
+            let each = joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind));
             let heat = amps * amps * each.value;
             if heat > JOINT_W {
                 found.add(
