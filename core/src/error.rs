@@ -248,6 +248,21 @@ pub enum Error {
         /// The most that can be delivered, in watts.
         most_W: f64,
     },
+    /// Sources of different voltages are to be joined in parallel.
+    #[error(
+        "sources of {least_V:.2} V to {most_V:.2} V in parallel would drive {circulating_A:.1} A through each other \
+         without any load; bring them to one voltage first, within {difference_V:.2} V"
+    )]
+    MismatchedSources {
+        /// Least voltage, in volts.
+        least_V: f64,
+        /// Greatest voltage, in volts.
+        most_V: f64,
+        /// Greatest current between them, in amperes.
+        circulating_A: f64,
+        /// Difference that is admitted, in volts.
+        difference_V: f64,
+    },
     /// No size or rating that may be used passes every check.
     #[error("no {what} passes every check; {remedy}")]
     NoneFits {
@@ -300,6 +315,7 @@ impl Error {
             Self::NotTabulated { .. } => "not-tabulated",
             Self::Refused { .. } => "refused",
             Self::NoSolution { .. } => "no-solution",
+            Self::MismatchedSources { .. } => "mismatched-sources",
             Self::NoneFits { .. } => "none-fits",
             Self::NotATree { .. } => "not-a-tree",
             Self::WrongCount { .. } => "wrong-count",
