@@ -21,3 +21,6 @@ pub use entry::{Entry, Input, Output};
 
 #[cfg(feature = "std")]
 pub(crate) use array::array;
+
+#[cfg(test)]
+mod tests;

@@ -63,7 +63,7 @@ calculations! {
     /// ```
     fn resistance_at_temperature(
         /// At the reference temperature.
-        resistance: ElectricalResistance in ohm [>= 0.0],
+        reference_resistance: ElectricalResistance in ohm [>= 0.0],
         /// Of the given resistance.
         reference_temperature: ThermodynamicTemperature in degree_celsius [-80.0 ..= 250.0] = 20.0,
         /// Of the conductor.
@@ -73,7 +73,10 @@ calculations! {
     ) -> resistance: ElectricalResistance in ohm
     formula "R_θ = R·(θ − θ₀)/(θ_ref − θ₀)"
     source "IEC 60228 and IEC 60287-1-1 for annealed copper (recalled)"
-    { resistance * ((temperature.value - inferred_zero.value) / (reference_temperature.value - inferred_zero.value)) }
+    {
+        let zero = inferred_zero.value;
+        reference_resistance * ((temperature.value - zero) / (reference_temperature.value - zero))
+    }
 }
 
 /// Any number of resistances in series; nought for none.
