@@ -3,9 +3,6 @@
 //! One `Copy` enum without owned text: it exists in every build, firmware included. The caller adds the
 //! place (which circuit, which line); the variants carry the numbers.
 
-// Unit suffixes keep the symbol's case.
-#![allow(non_snake_case)]
-
 use core::fmt;
 
 use crate::citation::Citation;
@@ -263,6 +260,17 @@ pub enum Error {
         /// Difference that is admitted, in volts.
         difference_V: f64,
     },
+    /// No voltage satisfies a network: it cannot carry its constant-power loads.
+    #[error(
+        "no voltage carries the constant-power load of {asked_W:.0} W at node {node} and those beyond it; use larger \
+         cross-sections, shorter runs, less load or a higher voltage"
+    )]
+    Collapse {
+        /// Index of the node in the network.
+        node: usize,
+        /// Constant power asked at that node, in watts.
+        asked_W: f64,
+    },
     /// No size or rating that may be used passes every check.
     #[error("no {what} passes every check; {remedy}")]
     NoneFits {
@@ -316,6 +324,7 @@ impl Error {
             Self::Refused { .. } => "refused",
             Self::NoSolution { .. } => "no-solution",
             Self::MismatchedSources { .. } => "mismatched-sources",
+            Self::Collapse { .. } => "collapse",
             Self::NoneFits { .. } => "none-fits",
             Self::NotATree { .. } => "not-a-tree",
             Self::WrongCount { .. } => "wrong-count",
@@ -361,6 +370,7 @@ mod tests {
         Refused
         NoSolution
         MismatchedSources
+        Collapse
         NoneFits
         NotATree
         WrongCount
@@ -462,6 +472,12 @@ mod tests {
                 "mismatched-sources",
                 "sources of 11.80 V to 12.80 V in parallel would drive 50.0 A through each other without any load; \
                  bring them to one voltage first, within 0.10 V",
+            ),
+            (
+                Error::Collapse { node: 3, asked_W: 900.0 },
+                "collapse",
+                "no voltage carries the constant-power load of 900 W at node 3 and those beyond it; use larger \
+                 cross-sections, shorter runs, less load or a higher voltage",
             ),
             (
                 Error::NoneFits { what: "conductor size", remedy: "add sizes to the stock" },

@@ -4,7 +4,7 @@ mod model;
 mod read;
 
 pub use model::{
-    BankEntry, Board, CircuitEntry, DeviceEntry, Earthing, End, InverterEntry, JointEntry, LoadEntry, LoadKind,
-    Part, PartKind, Pole, Return, Site, Stock, StockCable, StockDevice, StockLug,
+    BankEntry, Board, CircuitEntry, DeviceEntry, Earthing, End, InverterEntry, JointEntry, LoadEntry,
+    LoadKind, Part, PartKind, Pole, Return, Site, Stock, StockCable, StockDevice, StockLug,
 };
-pub use read::{Problem, Problems, read};
+pub use read::{Problem, Problems, read, read_bytes};

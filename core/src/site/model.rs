@@ -190,6 +190,7 @@ pub enum Return {
 
 /// `[[circuit]]`: one run of two conductors between two ends.
 #[derive(Clone, Debug)]
+#[allow(clippy::struct_excessive_bools)] // they are the flags of the file, each with its key
 pub struct CircuitEntry {
     /// `name`.
     pub name: String,
@@ -256,6 +257,7 @@ pub struct CircuitEntry {
 
 /// `[[circuit.device]]`.
 #[derive(Clone, Debug)]
+#[allow(non_snake_case)] // units keep their case: A2s
 pub struct DeviceEntry {
     /// `name`; `F1`, `F2` … by order in the file if absent.
     pub name: String,
@@ -280,7 +282,6 @@ pub struct DeviceEntry {
     /// `from_source = "150 mm"`: conductor between that end and the device.
     pub from_source: Option<Length>,
     /// `let_through = "12000 A2s"`: I²t at the greatest prospective current, A²·s.
-    #[allow(non_snake_case)]
     pub let_through_A2s: Option<f64>,
     /// `terminal_range = ["2.5 mm2", "35 mm2"]`.
     pub terminal_range: Option<(ConductorSize, ConductorSize)>,
@@ -369,6 +370,7 @@ pub struct StockCable {
 
 /// `[[stock.device]]`.
 #[derive(Clone, Debug)]
+#[allow(non_snake_case)] // units keep their case: A2s
 pub struct StockDevice {
     /// Line in the file.
     pub line: u32,
@@ -385,7 +387,6 @@ pub struct StockDevice {
     /// `full_rated`.
     pub full_rated: bool,
     /// `let_through`, A²·s.
-    #[allow(non_snake_case)]
     pub let_through_A2s: Option<f64>,
     /// `terminal_range`.
     pub terminal_range: Option<(ConductorSize, ConductorSize)>,
