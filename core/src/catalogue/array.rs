@@ -30,6 +30,7 @@ impl fmt::Display for AtIndex {
 }
 
 /// [`super::Entry::array`] of a calculation.
+#[allow(clippy::result_large_err, reason = "made once for whole columns")]
 pub(crate) fn array<C: Calculation<K, N>, const K: usize, const N: usize>(
     inputs: &[&[f64]],
     outputs: &mut [&mut [f64]],

@@ -11,7 +11,7 @@
 ///         kind: Enum in choice [choice],            // an enum that is a `Choice`
 ///     ) -> output: Type in unit                     // or several: => Struct { /// What it is. output: Type in unit, … }
 ///     where (a < b) a in unit: "why, and what to do"  // joint conditions on valid inputs, each naming the one at fault
-///     where (a < b) else (error)                    // … or giving an error of its own
+///     where (a < b) => (error)                      // … or giving an error of its own
 ///     formula "…" source "…"
 ///     { body }                                      // plain quantities, no Result
 /// }
@@ -33,7 +33,7 @@ macro_rules! calculations {
         $(=> $many:ident {
             $($(#[doc = $field_about:literal])+ $field:ident: $field_type:ident in $field_unit:ident),+ $(,)?
         })?
-        $(where ($condition:expr) $($culprit:ident in $culprit_unit:ident: $why:literal)? $(else ($error:expr))?)*
+        $(where ($condition:expr) $($culprit:ident in $culprit_unit:ident: $why:literal)? $(=> ($error:expr))?)*
         formula $formula:literal
         source $source:literal
         $body:block
@@ -69,7 +69,8 @@ macro_rules! calculations {
             #[inline]
             pub fn $name($($input: $type),+) -> Result<$crate::catalogue::calculations!(@type $($one_type)? $($many)?), $crate::Error> {
                 $($crate::catalogue::calculations!(@check $unit $type $input [$($range)+]);)+
-                $(if !($condition) {
+                $(let fulfilled: bool = $condition;
+                if !fulfilled {
                     $(return Err($crate::Error::Contradiction {
                         name: stringify!($culprit),
                         value: $crate::catalogue::unit::plain!($culprit_unit $culprit),

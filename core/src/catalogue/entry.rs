@@ -25,8 +25,12 @@ pub struct Entry {
     ///
     /// On an error the outputs hold no result.
     #[cfg(feature = "std")]
-    pub array: fn(&[&[f64]], &mut [&mut [f64]]) -> Result<(), super::AtIndex>,
+    pub array: Array,
 }
+
+/// A calculation on columns: inputs, outputs.
+#[cfg(feature = "std")]
+pub type Array = fn(&[&[f64]], &mut [&mut [f64]]) -> Result<(), super::AtIndex>;
 
 /// An input of a calculation.
 #[derive(Clone, Copy, Debug, PartialEq)]

@@ -1,6 +1,6 @@
 //! Declaration of the calculations that every face offers.
 //!
-//! Each is declared once, in its room, by the macro `calculations!` of [`declare`](self): from it come the typed
+//! Each is declared once, in its room, by the macro `calculations!` of `declare.rs`: from it come the typed
 //! function with its table of inputs, and an [`Entry`] that the faces are generated from. Faces hand over plain
 //! numbers in the declared units; everything is checked on the value in the base unit, so that all faces agree.
 
@@ -12,7 +12,7 @@ mod entry;
 pub(crate) mod unit;
 
 #[cfg(feature = "std")]
-pub use array::AtIndex;
+pub use self::{array::AtIndex, entry::Array};
 pub use choice::Choice;
 pub(crate) use declare::calculations;
 #[doc(hidden)]
@@ -21,3 +21,6 @@ pub use entry::{Entry, Input, Output};
 
 #[cfg(feature = "std")]
 pub(crate) use array::array;
+
+#[cfg(test)]
+mod tests;

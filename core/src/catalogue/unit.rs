@@ -51,6 +51,17 @@ macro_rules! unit {
     ($want:ident ratio) => {
         $crate::catalogue::unit::pick!($want, ::uom::si::ratio::ratio, "", "ratio")
     };
+    ($want:ident ampere_per_square_millimeter) => {
+        $crate::catalogue::unit::pick!(
+            $want,
+            ::uom::si::electric_current_density::ampere_per_square_millimeter,
+            "A/mm²",
+            "A_per_mm2"
+        )
+    };
+    ($want:ident awg) => {
+        $crate::catalogue::unit::pick!($want, ::uom::si::ratio::ratio, "AWG", "awg")
+    };
     // Not of `uom`: the type is bound to its range.
     ($want:ident per_hour) => {
         $crate::catalogue::unit::pick!($want, (), "/h", "per_h")
