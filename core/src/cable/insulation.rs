@@ -5,10 +5,12 @@
 use core::fmt;
 use core::str::FromStr;
 
+use uom::si::thermodynamic_temperature::degree_celsius;
+
 use super::Material;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error, Snippet};
-use crate::quantity::{ConductorSize, sqrt};
+use crate::quantity::{ConductorSize, ThermodynamicTemperature, sqrt};
 
 const ACCEPTED: &str =
     "'PVC 70 degC', 'XLPE 90 degC', 'EPR 90 degC', 'rubber 60 degC' or 'silicone 180 degC'";
@@ -259,18 +261,7 @@ pub fn adiabatic_k(
     size: ConductorSize,
 ) -> Result<AdiabaticK, Error> {
     let (initial, end) = (insulation.rating_degC, insulation.short_circuit_degC(size));
-    let (constant, beta) = match material {
-        Material::Copper => (226.0, 234.5),
-        Material::Aluminium => (148.0, 228.0),
-        Material::CopperCladAluminium => {
-            return Err(Error::NotTabulated {
-                what: "adiabatic k of copper-clad aluminium",
-                table: TABLE_43A,
-                remedy: "use a copper conductor",
-            });
-        }
-    };
-    let formula = constant * sqrt(libm::log(1.0 + (end - initial) / (beta + initial)));
+    let formula = formula(material, initial, end)?;
     let tabled = ADIABATIC_K
         .iter()
         .find(|r| r.compound == insulation.compound && r.initial_degC == initial && r.final_degC == end)
@@ -285,6 +276,65 @@ pub fn adiabatic_k(
         Some((value, citation)) => AdiabaticK { value, citation },
         None => AdiabaticK { value: formula, citation: ADIABATIC_FORMULA },
     })
+}
+
+/// k of the adiabatic equation between two conductor temperatures, by the formula alone: for a conductor that does
+/// not start at its rating, such as a protective conductor at 30 °C.
+///
+/// | input | unit | valid |
+/// | --- | --- | --- |
+/// | `initial` | °C | −80 … 250 |
+/// | `end` | °C | above `initial`, up to 400 |
+///
+/// # Errors
+/// [`Error::OutOfRange`] for a temperature that is NaN or out of range; [`Error::NotTabulated`] for copper-clad
+/// aluminium.
+///
+/// # Source
+/// k = K·√ln(1 + (θf − θi)/(β + θi)), IEC 60364-5-54:2011, Annex A.
+///
+/// # Example
+/// ```
+/// # use ampwright::cable::{Material, adiabatic_k_between};
+/// # use ampwright::quantity::ThermodynamicTemperature;
+/// # use uom::si::thermodynamic_temperature::degree_celsius;
+/// let at = ThermodynamicTemperature::new::<degree_celsius>;
+/// let k = adiabatic_k_between(Material::Copper, at(30.0), at(160.0))?;
+/// assert!((k.value - 143.0).abs() < 0.5);
+/// # Ok::<(), ampwright::Error>(())
+/// ```
+pub fn adiabatic_k_between(
+    material: Material,
+    initial: ThermodynamicTemperature,
+    end: ThermodynamicTemperature,
+) -> Result<AdiabaticK, Error> {
+    let (initial, end) = (initial.get::<degree_celsius>(), end.get::<degree_celsius>());
+    if !(-80.0..=250.0).contains(&initial) {
+        let allowed = Allowed::Between(-80.0, 250.0);
+        return Err(Error::OutOfRange { name: "initial temperature", value: initial, unit: "degC", allowed });
+    }
+    // Written so that NaN fails.
+    if !(end > initial && end <= 400.0) {
+        let allowed = Allowed::AboveUpTo(initial, 400.0);
+        return Err(Error::OutOfRange { name: "end temperature", value: end, unit: "degC", allowed });
+    }
+    Ok(AdiabaticK { value: formula(material, initial, end)?, citation: ADIABATIC_FORMULA })
+}
+
+/// k = K·√ln(1 + (θf − θi)/(β + θi)), temperatures in °C.
+fn formula(material: Material, initial: f64, end: f64) -> Result<f64, Error> {
+    let (constant, beta) = match material {
+        Material::Copper => (226.0, 234.5),
+        Material::Aluminium => (148.0, 228.0),
+        Material::CopperCladAluminium => {
+            return Err(Error::NotTabulated {
+                what: "adiabatic k of copper-clad aluminium",
+                table: TABLE_43A,
+                remedy: "use a copper conductor",
+            });
+        }
+    };
+    Ok(constant * sqrt(libm::log(1.0 + (end - initial) / (beta + initial))))
 }
 
 #[cfg(test)]
@@ -375,6 +425,16 @@ mod tests {
                 }
             }
         }
+    }
+
+    #[test]
+    fn odd_temperatures_between_are_refused() {
+        let at = ThermodynamicTemperature::new::<degree_celsius>;
+        for odd in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, 1e9, -300.0] {
+            assert!(adiabatic_k_between(Material::Copper, at(odd), at(160.0)).is_err(), "{odd}");
+            assert!(adiabatic_k_between(Material::Copper, at(70.0), at(odd)).is_err(), "{odd}");
+        }
+        assert!(adiabatic_k_between(Material::Copper, at(160.0), at(160.0)).is_err());
     }
 
     #[test]

@@ -9,7 +9,9 @@ mod resistance_table;
 mod series;
 
 pub use conductor::{Class, Coating, Conductor, Material};
-pub use insulation::{ADIABATIC_K, AdiabaticK, AdiabaticRow, Compound, Insulation, adiabatic_k};
+pub use insulation::{
+    ADIABATIC_K, AdiabaticK, AdiabaticRow, Compound, Insulation, adiabatic_k, adiabatic_k_between,
+};
 pub use joint::{GENERIC_JOINT, JointKind, joint_heat, joint_resistance, rated_joint_resistance};
 pub use lug::{Stud, lug_fits, terminal_takes};
 pub use resistance::{

@@ -67,7 +67,7 @@ pub struct ResistanceSource {
 /// row: resistivity over the area × the class's allowance, which is the worst ratio of printed maximum to
 /// 1/58 Ω·mm²/m over the area in the class's own table (plain: class 1 1.07, class 2 1.12, classes 5 and 6 1.16).
 /// A flexible AWG conductor has no row of its own: the greater of the stranded row and that formula counts; it
-/// agrees within 7 % with the greatest resistance of tin-plated flexible wire in FAA AC 43.13-1B, Table 11-9.
+/// agrees within 7.5 % with the greatest resistance of tin-plated wire, 16 AWG to 4/0, in FAA AC 43.13-1B, Table 11-9.
 ///
 /// | input | unit | valid |
 /// | --- | --- | --- |
