@@ -22,6 +22,9 @@ const fn rate(per_hour: f64) -> ChargeRate {
 }
 
 const NONE: ChargeRate = rate(0.0);
+/// Least rate of lead-acid: slower charge leaves acid layered and plates sulphated. Recalled.
+const LEAD_ACID_LEAST: ChargeRate = rate(0.1);
+const LITHIUM_DISCHARGE: ChargeRate = rate(1.0);
 
 /// Cell temperatures that are answered, °C; beyond them lies a slip of the pen, not a bank.
 #[allow(non_upper_case_globals)]
@@ -134,7 +137,7 @@ pub fn charge_limit(
         (Some(band), _) => ChargeLimit {
             usual: band.usual,
             ceiling: band.ceiling,
-            least: chemistry.is_lead_acid().then_some(rate(0.1)),
+            least: chemistry.is_lead_acid().then_some(LEAD_ACID_LEAST),
             citation: band.citation,
         },
         (None, first) => ChargeLimit {
@@ -233,7 +236,7 @@ pub fn discharge_limit(
         Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel | Chemistry::NickelCadmium => return Ok(None),
     };
     let admitted = (-20.0..=60.0).contains(&celsius);
-    Ok(Some((if admitted { rate(1.0) } else { NONE }, citation)))
+    Ok(Some((if admitted { LITHIUM_DISCHARGE } else { NONE }, citation)))
 }
 
 /// Greatest continuous discharge current of a bank at a cell temperature, if one is held.
