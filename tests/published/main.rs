@@ -1,1 +1,3 @@
 //! Tests: published.
+mod conductors;
+mod devices;

@@ -22,6 +22,9 @@ const fn rate(per_hour: f64) -> ChargeRate {
 }
 
 const NONE: ChargeRate = rate(0.0);
+/// Least rate of lead-acid: slower charge leaves acid layered and plates sulphated. Recalled.
+const LEAD_ACID_LEAST: ChargeRate = rate(0.1);
+const LITHIUM_DISCHARGE: ChargeRate = rate(1.0);
 
 /// Cell temperatures that are answered, °C; beyond them lies a slip of the pen, not a bank.
 #[allow(non_upper_case_globals)]
@@ -113,6 +116,16 @@ pub struct ChargeLimit {
 /// # Source
 /// Lead-acid: common handbook values, recalled. LFP: cell data sheets and a battery manual, page seen; where they
 /// differ, the lower. NMC and nickel-cadmium recalled.
+///
+/// # Example
+/// ```
+/// # use ampwright::battery::{Chemistry, charge_limit};
+/// # use ampwright::quantity::ThermodynamicTemperature;
+/// # use uom::si::thermodynamic_temperature::degree_celsius;
+/// let limit = charge_limit(Chemistry::Flooded, ThermodynamicTemperature::new::<degree_celsius>(25.0))?;
+/// assert_eq!((limit.usual.get(), limit.ceiling.get()), (0.13, 0.2));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn charge_limit(
     chemistry: Chemistry,
     temperature: ThermodynamicTemperature,
@@ -124,7 +137,7 @@ pub fn charge_limit(
         (Some(band), _) => ChargeLimit {
             usual: band.usual,
             ceiling: band.ceiling,
-            least: chemistry.is_lead_acid().then_some(rate(0.1)),
+            least: chemistry.is_lead_acid().then_some(LEAD_ACID_LEAST),
             citation: band.citation,
         },
         (None, first) => ChargeLimit {
@@ -201,6 +214,17 @@ pub fn charge_current_limit(
 ///
 /// # Source
 /// LFP: three cell and battery sheets, page seen; `lfp-temperature-limits` in `tests/reference/battery.toml`.
+///
+/// # Example
+/// ```
+/// # use ampwright::battery::{Chemistry, discharge_limit};
+/// # use ampwright::quantity::ThermodynamicTemperature;
+/// # use uom::si::thermodynamic_temperature::degree_celsius;
+/// let at = ThermodynamicTemperature::new::<degree_celsius>;
+/// assert_eq!(discharge_limit(Chemistry::Lfp, at(-10.0))?.map(|(rate, _)| rate.get()), Some(1.0));
+/// assert_eq!(discharge_limit(Chemistry::Lfp, at(-30.0))?.map(|(rate, _)| rate.get()), Some(0.0));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn discharge_limit(
     chemistry: Chemistry,
     temperature: ThermodynamicTemperature,
@@ -212,7 +236,7 @@ pub fn discharge_limit(
         Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel | Chemistry::NickelCadmium => return Ok(None),
     };
     let admitted = (-20.0..=60.0).contains(&celsius);
-    Ok(Some((if admitted { rate(1.0) } else { NONE }, citation)))
+    Ok(Some((if admitted { LITHIUM_DISCHARGE } else { NONE }, citation)))
 }
 
 /// Greatest continuous discharge current of a bank at a cell temperature, if one is held.
@@ -273,7 +297,9 @@ pub(super) fn checked_capacity(capacity: ElectricCharge) -> Result<f64, Error> {
 
 #[cfg(test)]
 mod tests {
+    extern crate std;
     use super::*;
+    use std::string::ToString;
 
     fn at(celsius: f64) -> ThermodynamicTemperature {
         ThermodynamicTemperature::new::<degree_celsius>(celsius)
@@ -334,6 +360,17 @@ mod tests {
         }
     }
 
-    extern crate std;
-    use std::string::ToString;
+    proptest::proptest! {
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(capacity: u64, celsius: u64) {
+            let capacity = ElectricCharge::new::<ampere_hour>(f64::from_bits(capacity));
+            let temperature = at(f64::from_bits(celsius));
+            for chemistry in Chemistry::ALL {
+                if let Ok(limit) = charge_current_limit(chemistry, capacity, temperature) {
+                    assert!(limit.usual.value >= 0.0 && limit.usual <= limit.ceiling);
+                }
+                let _ = discharge_current_limit(chemistry, capacity, temperature);
+            }
+        }
+    }
 }

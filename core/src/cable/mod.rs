@@ -1,6 +1,7 @@
 //! Conductors as things: sizes in stock, resistance, insulation, joints, lugs. No rule book.
 
 mod conductor;
+mod heat;
 mod insulation;
 mod joint;
 mod lug;
@@ -9,7 +10,8 @@ mod resistance_table;
 mod series;
 
 pub use conductor::{Class, Coating, Conductor, Material};
-pub use insulation::{ADIABATIC_K, AdiabaticK, AdiabaticRow, Compound, Insulation, adiabatic_k};
+pub use heat::{ADIABATIC_K, AdiabaticK, AdiabaticRow, adiabatic_k, adiabatic_k_between};
+pub use insulation::{Compound, Insulation};
 pub use joint::{GENERIC_JOINT, JointKind, joint_heat, joint_resistance, rated_joint_resistance};
 pub use lug::{Stud, lug_fits, terminal_takes};
 pub use resistance::{

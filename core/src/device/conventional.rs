@@ -25,7 +25,7 @@ pub struct Band {
     pub operating_ratio: f64,
     /// Conventional time, hours.
     pub time_h: f64,
-    /// Source of both multiples.
+    /// Source of the operating multiple, which is what protects.
     pub source: Citation,
 }
 
