@@ -1,1 +1,4 @@
 //! Tests: published.
+
+mod ampacity;
+mod protection_rules;
