@@ -139,7 +139,12 @@ fn agrees(word: &str, id: &str, filled: &[(&str, &str, f64)], beyond: usize) {
                 }
                 (None, Some(cell)) => {
                     let known = filled.iter().find(|(s, n, _)| *s == size.to_string() && n == name);
-                    assert_eq!(Some(cell.value), known.map(|k| k.2), "{}: not in the reference", of(size, name));
+                    assert_eq!(
+                        Some(cell.value),
+                        known.map(|k| k.2),
+                        "{}: not in the reference",
+                        of(size, name)
+                    );
                     assert_eq!(cell.citation.seen, Seen::Recalled, "{}", of(size, name));
                     filled_in += 1;
                 }
@@ -193,10 +198,27 @@ fn factors_agree(word: &str, id: &str, filled: &[(f64, usize, f64)]) {
     }
 }
 
+/// The columns named are recalled throughout, all others seen at 70 mm².
+fn recalled_columns(id: &str, recalled: &[&str]) {
+    let held = ampacity_table("iec", id);
+    let seventy = ConductorSize::mm2(70.0).expect("size");
+    for (index, column) in held.columns.iter().enumerate() {
+        let seen = held.printed(seventy, index).expect("cell").citation.seen;
+        assert_eq!(seen == Seen::Recalled, recalled.contains(&column.name), "{id}, {}", column.name);
+    }
+}
+
 /// Source: NFPA 70-2023, Table 310.16. Pages seen up to 500 kcmil; 4 AWG at 75 °C and above 500 kcmil recalled.
 #[test]
 fn nec_310_16() {
     agrees("us", "nec-310-16-copper", &[("4 AWG", "75C", 85.0)], 10);
+    // The cells that later editions changed were recalled, their neighbours seen.
+    let held = ampacity_table("us", "nec-310-16-copper");
+    let seen = |awg, column| held.printed(gauge(awg), column).expect("cell").citation.seen;
+    for (awg, column) in [("14", 0), ("12", 0), ("3", 2), ("1", 2)] {
+        assert_eq!(seen(awg, column), Seen::Recalled, "{awg} AWG");
+        assert_eq!(seen(awg, 1), Seen::Page, "{awg} AWG, 75 °C");
+    }
 }
 
 /// Source: NFPA 70-2023, Table 310.17; recalled.
@@ -209,24 +231,28 @@ fn nec_310_17() {
 #[test]
 fn iec_b_52_2() {
     agrees("iec", "iec-b52-2-pvc-two", &[], 5);
+    recalled_columns("iec-b52-2-pvc-two", &["D2"]);
 }
 
 /// Source: IEC 60364-5-52:2009, Table B.52.3. Pages seen up to 95 mm²; B1 16 mm², D2, larger sizes recalled.
 #[test]
 fn iec_b_52_3() {
     agrees("iec", "iec-b52-3-xlpe-two", &[("16 mm2", "B1", 100.0)], 5);
+    recalled_columns("iec-b52-3-xlpe-two", &["D2"]);
 }
 
 /// Source: IEC 60364-5-52:2009, Table B.52.10. Pages seen for F and G up to 95 mm²; the rest recalled.
 #[test]
 fn iec_b_52_10() {
     agrees("iec", "iec-b52-10-pvc-free-air", &[], 8);
+    recalled_columns("iec-b52-10-pvc-free-air", &["E, two", "E, three", "F, three flat"]);
 }
 
 /// Source: IEC 60364-5-52:2009, Table B.52.12. Pages seen for F and G up to 95 mm²; the rest recalled.
 #[test]
 fn iec_b_52_12() {
     agrees("iec", "iec-b52-12-xlpe-free-air", &[], 8);
+    recalled_columns("iec-b52-12-xlpe-free-air", &["E, two", "E, three"]);
 }
 
 /// Source: 33 CFR 183.425, Table 5 (2015). Page seen; 8 AWG at 90 °C recalled.
@@ -283,7 +309,12 @@ fn ambient_factors_follow_their_law() {
                 let Some(figure) = figure else { continue };
                 // The first row of the 105 and 125 °C table means 30 °C or less.
                 let law = ((column.rating_degC - band.upto) / (column.rating_degC - base)).sqrt();
-                assert!((figure - law).abs() <= 0.005 + 1e-9, "{id}, {}, {}: {figure}, law {law}", band.upto, column.name);
+                assert!(
+                    (figure - law).abs() <= 0.005 + 1e-9,
+                    "{id}, {}, {}: {figure}, law {law}",
+                    band.upto,
+                    column.name
+                );
             }
         }
     }
@@ -303,17 +334,15 @@ fn iec_sizes_recalled_do_not_exceed_their_fit() {
             let points: Vec<(f64, f64, f64)> = table
                 .rows
                 .iter()
-                .filter_map(|(size, _)| Some((size.area_mm2(), metal(*size).ln(), table.cell(*size, index)?.value)))
+                .filter_map(|(size, _)| {
+                    Some((size.area_mm2(), metal(*size).ln(), table.cell(*size, index)?.value))
+                })
                 .collect();
-            let seen: Vec<(f64, f64)> = points
-                .iter()
-                .filter(|p| (25.0..=95.0).contains(&p.0))
-                .map(|p| (p.1, p.2.ln()))
-                .collect();
+            let seen: Vec<(f64, f64)> =
+                points.iter().filter(|p| (25.0..=95.0).contains(&p.0)).map(|p| (p.1, p.2.ln())).collect();
             let count = seen.len() as f64;
             assert_eq!(seen.len(), 5, "{}", table.id);
-            let (mx, my) =
-                seen.iter().fold((0.0, 0.0), |(x, y), p| (x + p.0 / count, y + p.1 / count));
+            let (mx, my) = seen.iter().fold((0.0, 0.0), |(x, y), p| (x + p.0 / count, y + p.1 / count));
             let slope = seen.iter().map(|p| (p.0 - mx) * (p.1 - my)).sum::<f64>()
                 / seen.iter().map(|p| (p.0 - mx) * (p.0 - mx)).sum::<f64>();
             for (area, log_metal, current) in points.into_iter().filter(|p| p.0 > 95.0) {
@@ -324,7 +353,12 @@ fn iec_sizes_recalled_do_not_exceed_their_fit() {
                     ("F, three trefoil" | "F, three flat", 400.0..) => -0.064,
                     _ => -0.01,
                 };
-                assert!((low..=0.0101).contains(&off), "{}, {}, {area} mm²: {off:.4}", table.id, table.columns[index].name);
+                assert!(
+                    (low..=0.0101).contains(&off),
+                    "{}, {}, {area} mm²: {off:.4}",
+                    table.id,
+                    table.columns[index].name
+                );
             }
         }
     }
@@ -381,7 +415,10 @@ fn nine_conductors_of_12_awg() {
     let case = case("code-forum-nine-12awg-thhn");
     let found = answer(
         "us",
-        AmpacityQuery { bundled_conductors: 9, ..query(gauge("12"), case.input("insulation_C"), Installation::Conduit) },
+        AmpacityQuery {
+            bundled_conductors: 9,
+            ..query(gauge("12"), case.input("insulation_C"), Installation::Conduit)
+        },
     );
     assert_eq!(found.base.value, case.expected("base_A"));
     assert!(found.factors.iter().any(|f| f.value == case.expected("factor")));
@@ -396,7 +433,8 @@ fn nine_conductors_of_12_awg() {
 fn ten_awg_at_120_fahrenheit() {
     let case = case("code-training-10awg-120f");
     let ambient = (case.input("ambient_F") - 32.0) / 1.8;
-    let found = answer("us", at(query(gauge("10"), case.input("insulation_C"), Installation::Conduit), ambient));
+    let found =
+        answer("us", at(query(gauge("10"), case.input("insulation_C"), Installation::Conduit), ambient));
     assert_eq!(found.base.value, case.expected("base_A"));
     assert!(found.factors.iter().any(|f| f.value == case.expected("factor")));
     assert!((found.corrected.get::<ampere>() - case.expected("ampacity_A")).abs() < 1e-9);
@@ -412,7 +450,10 @@ fn permit_sheet_for_photovoltaic_conductors() {
     assert!((design - case.expected("design_current_A")).abs() < 1e-9);
     let rating = rules("us").standard_ratings_A().iter().copied().find(|r| *r >= design);
     assert_eq!(rating, Some(case.expected("ocpd_A")));
-    let found = answer("us", at(query(gauge("10"), 90.0, Installation::Conduit), case.expected("adjusted_ambient_C")));
+    let found = answer(
+        "us",
+        at(query(gauge("10"), 90.0, Installation::Conduit), case.expected("adjusted_ambient_C")),
+    );
     assert_eq!(found.base.value, case.expected("table_ampacity_A"));
     assert!((design / case.input("ambient_factor") - case.expected("needed_table_ampacity_A")).abs() < 0.1);
     assert!((found.corrected.get::<ampere>() - 40.0 * 0.65).abs() < 1e-9);
@@ -422,10 +463,14 @@ fn permit_sheet_for_photovoltaic_conductors() {
 /// Source: NFPA 70-2023, 310.15(B)(2), recalled: 33 K above a roof. 30 °C becomes 63 °C, factor 0.65.
 #[test]
 fn rooftop_adder() {
-    let found = answer("us", AmpacityQuery { space: Space::Rooftop, ..query(gauge("10"), 90.0, Installation::Conduit) });
+    let found = answer(
+        "us",
+        AmpacityQuery { space: Space::Rooftop, ..query(gauge("10"), 90.0, Installation::Conduit) },
+    );
     assert_eq!(found.factors[0].value, 0.65);
     for word in ["iec", "craft_iso", "craft_us"] {
-        let on_roof = AmpacityQuery { space: Space::Rooftop, ..query(gauge("10"), 90.0, Installation::Clipped) };
+        let on_roof =
+            AmpacityQuery { space: Space::Rooftop, ..query(gauge("10"), 90.0, Installation::Clipped) };
         assert!(rules(word).ampacity(&on_roof).is_err(), "{word}");
     }
 }
@@ -436,7 +481,9 @@ fn rooftop_adder() {
 fn photovoltaic_cable_at_70_degrees() {
     let case = case("pv-use2-rooftop-058");
     let figures = case.list(false, "ampacity_A");
-    for ((gauge_text, base), expected) in ["10", "12", "14"].iter().zip(case.list(true, "base_A")).zip(figures) {
+    for ((gauge_text, base), expected) in
+        ["10", "12", "14"].iter().zip(case.list(true, "base_A")).zip(figures)
+    {
         let found = answer("us", at(query(gauge(gauge_text), 90.0, Installation::Conduit), 70.0));
         assert_eq!(found.base.value, base);
         assert!((found.corrected.get::<ampere>() - expected).abs() < 0.005);
@@ -462,7 +509,9 @@ fn tabled_rating_for_a_32_a_device() {
 fn shower_circuit_at_35_degrees() {
     let case = case("textbook-shower-it-35c");
     assert!((case.input("device_A") / case.input("ca") - case.expected("it_A")).abs() < 0.005);
-    let wall = |mm2: f64| at(query(ConductorSize::mm2(mm2).unwrap(), 70.0, Installation::CableInInsulatedWall), 35.0);
+    let wall = |mm2: f64| {
+        at(query(ConductorSize::mm2(mm2).unwrap(), 70.0, Installation::CableInInsulatedWall), 35.0)
+    };
     let found = answer("iec", wall(case.expected("size_mm2")));
     assert_eq!((found.base.value, found.factors[0].value), (43.0, case.input("ca")));
     assert!(found.corrected.get::<ampere>() >= case.input("device_A"));
@@ -505,7 +554,11 @@ fn small_craft_105_degree_cable_bundled() {
             let found = current("craft_us", AmpacityQuery { space, bundled_conductors: conductors, ..run });
             let printed = number(&row[index + 1]).unwrap();
             let places = if printed.fract() == 0.0 { 0.5 } else { 0.05 };
-            assert!((found - printed).abs() <= places + 1e-9, "{}, {conductors}: {found}, printed {printed}", run.size);
+            assert!(
+                (found - printed).abs() <= places + 1e-9,
+                "{}, {conductors}: {found}, printed {printed}",
+                run.size
+            );
         }
     }
 }
@@ -514,7 +567,8 @@ fn small_craft_105_degree_cable_bundled() {
 #[test]
 fn small_craft_100_a_takes_6_awg() {
     let case = case("smallcraft-100a-10ft-24v-3pct");
-    let carries = |awg| current("craft_us", query(gauge(awg), case.input("insulation_C"), Installation::FreeAir));
+    let carries =
+        |awg| current("craft_us", query(gauge(awg), case.input("insulation_C"), Installation::FreeAir));
     assert!(carries("8") < case.input("current_A") && carries("6") >= case.input("current_A"));
 }
 

@@ -25,8 +25,11 @@ fn most(word: &str, size: ConductorSize, corrected: f64) -> f64 {
 /// Source: NFPA 70-2023, 240.6(A). Page seen from 15 to 600 A, the rest recalled. Exact.
 #[test]
 fn nec_240_6_a() {
-    let reference: Vec<f64> =
-        table("protection", "nec-240-6-a-standard-ratings").rows.iter().filter_map(|r| number(&r[0])).collect();
+    let reference: Vec<f64> = table("protection", "nec-240-6-a-standard-ratings")
+        .rows
+        .iter()
+        .filter_map(|r| number(&r[0]))
+        .collect();
     assert_eq!(rules("us").standard_ratings_A(), reference);
 }
 
@@ -149,8 +152,11 @@ fn iec_54_2() {
 /// the IEC rows. The IEC figures taken are those of a public supply: 3 and 5 %.
 #[test]
 fn voltage_drop() {
-    let reference: Vec<f64> =
-        table("protection", "voltage-drop-recommendations").rows.iter().filter_map(|r| number(&r[1])).collect();
+    let reference: Vec<f64> = table("protection", "voltage-drop-recommendations")
+        .rows
+        .iter()
+        .filter_map(|r| number(&r[1]))
+        .collect();
     let limit = |word: &str, usage| {
         let limit = rules(word).drop_limit(usage);
         (limit.ratio.get::<percent>(), limit.required)
@@ -170,7 +176,7 @@ fn voltage_drop() {
 }
 
 /// Source: 33 CFR 183.455 and ABYC E-11 (7, 40, 72 in), ISO 13297 (200 mm), IEC 60364-4-43, 434.2.1 (3 m); all
-/// recalled. ISO 13590, the page seen, is another craft and gives 180, 500, 900 mm: the same order.
+/// recalled. The page seen (ISO 13590: 180, 500, 900 mm) is for personal watercraft, no set held here.
 #[test]
 fn unprotected_length() {
     let length = |word: &str, sheathed, post| {
@@ -186,8 +192,4 @@ fn unprotected_length() {
     near(length("iec", true, true), 3000.0);
     assert_eq!(length("craft_iso", true, true), None);
     assert_eq!(length("us", false, true), None);
-    let order: Vec<f64> =
-        table("protection", "smallcraft-ocpd-position").rows.iter().filter_map(|r| number(&r[1])).collect();
-    assert_eq!(order, [180.0, 500.0, 900.0]);
-    near(length("craft_us", false, false), order[0] - 2.2);
 }

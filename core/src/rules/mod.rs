@@ -14,6 +14,9 @@ mod query;
 mod table;
 mod us;
 
+#[cfg(test)]
+mod tests;
+
 pub use answer::Rules;
 pub use book::{
     AmbientRule, ByLine, ConductorRule, Count, DeviceRule, DropRule, EngineRule, Grouping, Instead,
