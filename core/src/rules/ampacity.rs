@@ -19,8 +19,8 @@ impl Rules {
     ///
     /// The column is the hottest whose rating does not exceed the insulation's; the row is the size's own, or
     /// the largest whose metal area does not exceed the size's (see [`Ampacity::row`]). The ambient counts with
-    /// its adder above a roof; engine spaces take the set's own factor instead of an ambient factor, a hotter
-    /// stated ambient lowers it further.
+    /// its adder above a roof; engine spaces take the set's own factor, or the stated ambient's where that is
+    /// lower, never both.
     ///
     /// | input | unit | valid |
     /// | --- | --- | --- |
@@ -161,7 +161,7 @@ impl Rules {
         }
     }
 
-    /// The set's own factor or the user's, and never more than a stated ambient beyond the factor's admits.
+    /// The set's own factor or the user's, or the stated ambient's where that is lower.
     fn engine_factor(
         &self,
         placement: &Placement,
@@ -170,15 +170,11 @@ impl Rules {
     ) -> Result<Option<Factor>, Error> {
         let own = self.overrides().engine_space;
         let own = own.map(|value| Factor { name: ENGINE_SPACE, value, citation: STATED });
-        let stated = |name| ambient_factor(placement, name, ambient, column);
-        let Some(rule) = &self.set().engine else {
-            return Ok(lower(own, stated("ambient")?));
+        let factor = match (own, &self.set().engine) {
+            (None, Some(rule)) => Some(rule.factor(placement, column)?),
+            (own, _) => own,
         };
-        let factor = own.map_or_else(|| rule.factor(placement, column), Ok)?;
-        if ambient > rule.ambient_degC {
-            return Ok(lower(Some(factor), stated("engine space, stated ambient")?));
-        }
-        Ok(Some(factor))
+        Ok(lower(factor, ambient_factor(placement, "ambient of the engine space", ambient, column)?))
     }
 
     /// Factor for several runs together.

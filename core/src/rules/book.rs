@@ -119,8 +119,8 @@ pub enum Count {
 pub struct EngineRule {
     /// Factor by temperature rating.
     pub table: &'static FactorTable,
-    /// Ambient the factors are stated for, °C. A recalled factor is held against √((Tc − this)/(Tc − base)) and
-    /// the lower governs; a higher stated ambient lowers every factor further.
+    /// Ambient the factors are stated for, °C: a recalled factor is held against √((Tc − this)/(Tc − base)), and
+    /// the lower governs.
     pub ambient_degC: f64,
     /// Cited where the derivation governs.
     pub derived: Citation,

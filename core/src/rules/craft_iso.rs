@@ -96,8 +96,8 @@ static ENGINE: FactorTable = FactorTable {
 static BUNDLING: FactorTable = FactorTable {
     id: "iso-13297-bundling",
     citation: cite("annex A"),
-    what: "bundled conductors",
-    unit: "",
+    what: "the bundle",
+    unit: "conductors",
     remedy: "bundle fewer conductors",
     columns: &[factor("", Seen::Recalled)],
     bands: &[

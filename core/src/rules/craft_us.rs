@@ -84,8 +84,8 @@ static ENGINE: FactorTable = FactorTable {
 static BUNDLING: FactorTable = FactorTable {
     id: "cfr-33-183-425-bundling",
     citation: cite("183.425, Table 5, note 2", Seen::Page),
-    what: "bundled conductors",
-    unit: "",
+    what: "the bundle",
+    unit: "conductors",
     remedy: "bundle fewer conductors",
     columns: &[factor("", Seen::Page)],
     bands: &[

@@ -16,6 +16,9 @@ mod table;
 mod us;
 mod usual;
 
+#[cfg(test)]
+mod tests;
+
 pub use answer::Rules;
 pub use book::{
     AmbientRule, ByLine, ConductorRule, Count, DeviceRule, DropRule, EngineRule, Grouping, Instead,

@@ -241,8 +241,8 @@ pub(super) static AMBIENT_PV: FactorTable = FactorTable {
 pub(super) static BUNDLING: FactorTable = FactorTable {
     id: "nec-310-15-c-1-bundling",
     citation: cite("Table 310.15(C)(1)", Seen::Page),
-    what: "bundled conductors",
-    unit: "",
+    what: "the bundle",
+    unit: "conductors",
     remedy: "bundle fewer conductors",
     columns: &[FactorColumn { name: "factor", rating_degC: 0.0, seen: Seen::Page, end: "" }],
     bands: &[
