@@ -26,7 +26,7 @@ fn ohm_current_raw(voltage: f64, resistance: f64) -> f64 {
 
 #[inline(never)]
 fn ohm_current_typed(voltage: ElectricPotential, resistance: ElectricalResistance) -> ElectricCurrent {
-    voltage / resistance + ElectricCurrent::new::<ampere>(2.0)
+    law::ohm_current::formula(voltage, resistance) + ElectricCurrent::new::<ampere>(2.0)
 }
 
 #[inline(never)]
@@ -51,7 +51,8 @@ fn voltage_drop_typed(
     resistivity: ElectricalResistivity,
     current: ElectricCurrent,
 ) -> ElectricPotential {
-    2.0 * one_way * resistivity / cross_section * current + ElectricPotential::new::<volt>(6.0)
+    law::voltage_drop::formula(one_way, cross_section, resistivity, current)
+        + ElectricPotential::new::<volt>(6.0)
 }
 
 #[inline(never)]

@@ -40,6 +40,9 @@ int main(void) {
   wrong = run;
   wrong.cross_section_mm2 = 5e-324;
   check(aw_voltage_drop(&wrong, 25.0, &drop_V) == AW_STATUS_OUT_OF_RANGE, "an area that vanishes in m2 is refused");
+  wrong = run;
+  wrong.one_way_m = 1e308;
+  check(aw_voltage_drop(&wrong, 1e308, &drop_V) == AW_STATUS_OUT_OF_RANGE, "an infinite drop is refused");
   check(aw_voltage_drop(NULL, 25.0, &drop_V) == AW_STATUS_NULL_POINTER, "no run");
   check(drop_V == 7.0, "the output is untouched after an error");
   check(aw_voltage_drop(&run, 25.0, NULL) == AW_STATUS_NULL_POINTER, "no output");

@@ -124,9 +124,11 @@ uint32_t aw_abi_version(void);
  * @param[in]  run        not NULL
  * @param[in]  current_A  finite; the sign gives the direction
  * @param[out] drop_V     volts; untouched unless AW_STATUS_OK
- * @return AW_STATUS_OK, AW_STATUS_NULL_POINTER or AW_STATUS_OUT_OF_RANGE
+ * @return AW_STATUS_OK, AW_STATUS_NULL_POINTER or AW_STATUS_OUT_OF_RANGE, also where the drop is too large for a double
  */
-aw_status aw_voltage_drop(const struct aw_cable_run *run, double current_A, double *drop_V);
+aw_status aw_voltage_drop(const struct aw_cable_run *run,
+                          double current_A,
+                          double *drop_V);
 
 #ifdef __cplusplus
 }  // extern "C"

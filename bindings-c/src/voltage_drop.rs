@@ -23,7 +23,7 @@ pub struct CableRun {
 /// @param[in]  run        not NULL
 /// @param[in]  current_A  finite; the sign gives the direction
 /// @param[out] drop_V     volts; untouched unless AW_STATUS_OK
-/// @return AW_STATUS_OK, AW_STATUS_NULL_POINTER or AW_STATUS_OUT_OF_RANGE
+/// @return AW_STATUS_OK, AW_STATUS_NULL_POINTER or AW_STATUS_OUT_OF_RANGE, also where the drop is too large for a double
 #[unsafe(no_mangle)]
 #[allow(clippy::missing_safety_doc)] // the header states once, for all functions, what pointers must be
 pub unsafe extern "C" fn aw_voltage_drop(run: *const CableRun, current_A: f64, drop_V: *mut f64) -> Status {

@@ -3,7 +3,7 @@
 use ampwright::Error;
 use pyo3::prelude::*;
 
-/// The exception for an error, with the input named as Python spells it: core's name and the unit suffix.
+/// The exception for an error, with the input or output named as Python spells it: core's name and the unit suffix.
 pub(crate) fn raised(py: Python<'_>, error: Error, spelling: &[(&'static str, &'static str)]) -> PyErr {
     let spelled = |name| spelling.iter().find(|(core, _)| *core == name).map_or(name, |(_, python)| *python);
     let made = match error {

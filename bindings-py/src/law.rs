@@ -26,6 +26,7 @@ pub(crate) fn voltage_drop(
         ("cross_section", "cross_section_mm2"),
         ("resistivity", "resistivity_ohm_m"),
         ("current", "current_A"),
+        ("drop", "drop_V"),
     ];
     drop.map(|drop| drop.get::<electric_potential::volt>()).map_err(|error| raised(py, error, &spelling))
 }

@@ -48,6 +48,12 @@ def test_an_area_that_vanishes_in_square_metres_is_refused():
         voltage_drop(**PUMP | {"cross_section_mm2": 5e-324})
 
 
+def test_a_result_too_large_for_a_number_is_refused():
+    with pytest.raises(RangeError) as caught:
+        voltage_drop(**PUMP | {"one_way_m": 1e308, "current_A": 1e308})
+    assert caught.value.name == "drop_V"
+
+
 def test_a_text_is_not_a_number():
     with pytest.raises(TypeError):
         voltage_drop(**PUMP | {"one_way_m": "12 m"})

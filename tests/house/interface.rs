@@ -208,10 +208,9 @@ fn declared_functions(tokens: &[TokenTree]) -> Vec<(String, String)> {
         else {
             continue;
         };
-        let outputs = tokens
-            .iter()
-            .skip(i + 3)
-            .take_while(|t| !["where", "source"].contains(&ident(Some(t)).unwrap_or_default().as_str()));
+        let outputs = tokens.iter().skip(i + 3).take_while(|t| {
+            !["where", "formula", "source"].contains(&ident(Some(t)).unwrap_or_default().as_str())
+        });
         let words = without_docs(inputs.into_iter().collect());
         let outputs = without_docs(outputs.cloned().collect());
         found.push((name.clone(), format!("calculation {name}({words}) {outputs}")));
@@ -287,7 +286,11 @@ fn list(path: &str, module: &Module, implemented: &Implemented, lines: &mut Vec<
             here.push(reexport(from, name));
             continue;
         };
-        let deeper = inner.brought_out.iter().filter(|(_, n)| n == last).map(|(path, n)| reexport(path, n));
+        let deeper = inner
+            .brought_out
+            .iter()
+            .filter(|(_, n)| last == "*" || n == last)
+            .map(|(path, n)| reexport(path, n));
         here.extend(deeper);
         for (item_name, item) in inner.items.iter().filter(|(n, _)| last == "*" || n == last) {
             here.push(item.clone());

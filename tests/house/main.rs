@@ -33,10 +33,12 @@ fn files() -> Vec<String> {
     list.lines().filter(|path| root().join(path).is_file()).map(str::to_owned).collect()
 }
 
-/// Rust files below a directory.
+/// Rust files below a directory, without those that hold unit tests only.
 fn rust_files(directory: &str) -> Vec<String> {
-    let is_rust = |path: &String| Path::new(path).extension().is_some_and(|e| e == "rs");
-    files().into_iter().filter(|path| path.starts_with(directory) && is_rust(path)).collect()
+    let is_rust = |path: &Path| path.extension().is_some_and(|e| e == "rs");
+    let is_test = |path: &Path| path.iter().any(|part| part == "tests" || part == "tests.rs");
+    let wanted = |path: &Path| path.starts_with(directory) && is_rust(path) && !is_test(path);
+    files().into_iter().filter(|path| wanted(Path::new(path))).collect()
 }
 
 /// Standard output of a command run in the top directory; it must succeed.

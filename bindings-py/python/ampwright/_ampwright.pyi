@@ -1,3 +1,5 @@
+__all__ = ["__version__", "voltage_drop"]
+
 __version__: str
 
 def voltage_drop(

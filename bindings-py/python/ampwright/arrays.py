@@ -35,7 +35,7 @@ def voltage_drop(
     Raises
     ------
     RangeError
-        An input is NaN, infinite or out of range.
+        An input is NaN, infinite or out of range, or the drop is too large for a float.
 
     Examples
     --------
