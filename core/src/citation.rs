@@ -48,7 +48,7 @@ impl fmt::Display for Citation {
             write!(f, ", {}", self.place)?;
         }
         match self.seen {
-            Seen::Recalled => f.write_str(" (recalled; verify)"),
+            Seen::Recalled => f.write_str(" (recalled)"),
             Seen::Page | Seen::Derived | Seen::Practice | Seen::Stated => Ok(()),
         }
     }

@@ -5,7 +5,10 @@
 #![no_std]
 #![forbid(unsafe_code)]
 #![deny(missing_docs)]
-#![cfg_attr(not(test), deny(clippy::unwrap_used, clippy::expect_used, clippy::panic, clippy::indexing_slicing))]
+#![cfg_attr(
+    not(test),
+    deny(clippy::unwrap_used, clippy::expect_used, clippy::panic, clippy::indexing_slicing)
+)]
 
 #[cfg(feature = "alloc")]
 extern crate alloc;
@@ -27,9 +30,9 @@ pub mod load;
 // Floor 3
 pub mod rules;
 // Floor 4
+pub mod circuit;
 pub mod network;
 pub mod protection;
-pub mod circuit;
 // Floor 6
 #[cfg(feature = "site")]
 pub mod site;

@@ -9,4 +9,7 @@ pub use charge::{
     discharge_current_limit, discharge_limit,
 };
 pub use chemistry::Chemistry;
-pub use fault::{FaultVoltage, ResistanceRise, ShortCircuitEstimate, bank_resistance, resistance_rise, short_circuit_estimate, fault_voltage};
+pub use fault::{
+    FaultVoltage, ResistanceRise, ShortCircuitEstimate, bank_resistance, fault_voltage, resistance_rise,
+    short_circuit_estimate,
+};

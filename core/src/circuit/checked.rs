@@ -3,6 +3,7 @@
 use core::fmt;
 
 use crate::citation::{Citation, Seen};
+use crate::quantity::Figures;
 use crate::rules::Check;
 
 /// Outcome of a check.
@@ -50,13 +51,27 @@ pub struct Checked {
 
 impl Checked {
     /// A value that may not exceed a limit. NaN fails.
-    pub(super) fn at_most(check: Check, actual: f64, limit: f64, unit: &'static str, what: &'static str, citation: Citation) -> Self {
+    pub(super) fn at_most(
+        check: Check,
+        actual: f64,
+        limit: f64,
+        unit: &'static str,
+        what: &'static str,
+        citation: Citation,
+    ) -> Self {
         let outcome = if actual <= limit { Outcome::Passed } else { Outcome::Failed };
         Self { check, outcome, actual, limit, unit, relation: Relation::AtMost, what, citation }
     }
 
     /// A value that may not fall below a limit. NaN fails.
-    pub(super) fn at_least(check: Check, actual: f64, limit: f64, unit: &'static str, what: &'static str, citation: Citation) -> Self {
+    pub(super) fn at_least(
+        check: Check,
+        actual: f64,
+        limit: f64,
+        unit: &'static str,
+        what: &'static str,
+        citation: Citation,
+    ) -> Self {
         let outcome = if actual >= limit { Outcome::Passed } else { Outcome::Failed };
         Self { check, outcome, actual, limit, unit, relation: Relation::AtLeast, what, citation }
     }
@@ -91,18 +106,39 @@ impl Checked {
     }
 }
 
+impl Checked {
+    /// `79.54 A, at most 100 A`; more digits where fewer would make value and limit read the same though one fails.
+    pub fn numbers(&self) -> Numbers<'_> {
+        Numbers(self)
+    }
+}
+
+/// Value and limit of a check in words.
+#[derive(Clone, Copy, Debug)]
+pub struct Numbers<'a>(&'a Checked);
+
+impl fmt::Display for Numbers<'_> {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        let Checked { actual, limit, unit, relation, outcome, .. } = self.0;
+        let words = match relation {
+            Relation::AtMost => "at most",
+            Relation::AtLeast => "at least",
+            Relation::Plain => return Ok(()),
+        };
+        if *outcome == Outcome::Failed && Figures(*actual).reads_like(*limit) {
+            write!(f, "{actual} {unit}, {words} {limit} {unit}")
+        } else {
+            write!(f, "{} {unit}, {words} {} {unit}", Figures(*actual), Figures(*limit))
+        }
+    }
+}
+
 impl fmt::Display for Checked {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        match self.relation {
-            Relation::Plain => write!(f, "{}: {}", self.what, self.verdict())?,
-            _ if self.outcome == Outcome::NotChecked => write!(f, "{}: not checked", self.what)?,
-            Relation::AtMost => {
-                write!(f, "{}: {:.3} {unit}, at most {:.3} {unit}: {}", self.what, self.actual, self.limit, self.verdict(), unit = self.unit)?;
-            }
-            Relation::AtLeast => {
-                write!(f, "{}: {:.3} {unit}, at least {:.3} {unit}: {}", self.what, self.actual, self.limit, self.verdict(), unit = self.unit)?;
-            }
+        match (self.relation, self.outcome) {
+            (Relation::Plain, _) | (_, Outcome::NotChecked) => write!(f, "{}", self.what)?,
+            _ => write!(f, "{}: {}", self.what, self.numbers())?,
         }
-        write!(f, " ({})", self.citation)
+        write!(f, ": {} ({})", self.verdict(), self.citation)
     }
 }

@@ -1,12 +1,13 @@
 //! Judging and sizing one run: what is stated is checked, what is left out is designed.
 
 mod checked;
+mod facts;
 mod inverter;
 mod judge;
 mod run;
 mod size;
 
-pub use checked::{Checked, Outcome, Relation};
+pub use checked::{Checked, Numbers, Outcome, Relation};
 pub use inverter::{InverterFeed, inverter_feed};
 pub use judge::{Judgement, judge};
 pub use run::{Demand, Run};

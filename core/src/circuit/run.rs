@@ -3,7 +3,7 @@
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::electrical_resistance::ohm;
-use uom::si::length::{kilometer, meter};
+use uom::si::length::kilometer;
 use uom::si::power::watt;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
@@ -75,6 +75,10 @@ pub struct Run {
     pub drop: Option<Ratio>,
     /// Least supply voltage of what hangs at the far end.
     pub least_voltage: Option<ElectricPotential>,
+    /// Current that comes on top while what hangs there starts, where it is stated.
+    pub start: Option<ElectricCurrent>,
+    /// Loop resistance from the source to the run's beginning: the start current flows through it too.
+    pub resistance_before: ElectricalResistance,
     /// Greatest prospective current at the device; `None` where the source's is not known (R6).
     pub greatest_fault: Option<ElectricCurrent>,
     /// The source behind the run's beginning at its weakest; `None` where not known.
@@ -122,6 +126,8 @@ impl Run {
             usage: LoadUse::Other,
             drop: None,
             least_voltage: None,
+            start: None,
+            resistance_before: ElectricalResistance::new::<ohm>(0.0),
             greatest_fault: None,
             weakest_source: None,
         }
@@ -142,6 +148,7 @@ impl Run {
         within("negative_length", self.negative_length.get::<kilometer>(), "km", length)?;
         let resistance = Allowed::Between(0.0, 1e6);
         within("resistance of the joints", self.joints.get::<ohm>(), "ohm", resistance)?;
+        within("resistance before the run", self.resistance_before.get::<ohm>(), "ohm", resistance)?;
         if let Some(way_back) = self.return_resistance {
             within("resistance of the return", way_back.get::<ohm>(), "ohm", resistance)?;
         }
@@ -151,18 +158,15 @@ impl Run {
                 within("continuous current", continuous.get::<ampere>(), "A", current)?;
                 within("other current", other.get::<ampere>(), "A", current)?;
             }
-            Demand::Power { power, .. } => within("power", power.get::<watt>(), "W", Allowed::Between(0.0, 1e8))?,
+            Demand::Power { power, .. } => {
+                within("power", power.get::<watt>(), "W", Allowed::Between(0.0, 1e8))?
+            }
         }
         within("ambient", self.ambient.get::<degree_celsius>(), "degC", Allowed::Between(-80.0, 200.0))?;
         if let Some(own) = self.drop {
             within("drop", own.get::<ratio>() * 100.0, "%", Allowed::AboveUpTo(0.0, 50.0))?;
         }
         Ok(())
-    }
-
-    /// Both conductor lengths together.
-    pub(super) fn conductor_m(&self) -> (f64, f64) {
-        (self.positive_length.get::<meter>(), self.negative_length.get::<meter>())
     }
 }
 

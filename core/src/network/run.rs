@@ -65,7 +65,12 @@ pub fn deliver(
     let v = 0.5 * (e + sqrt(root));
     let i = p / v;
     if !(v.is_finite() && i.is_finite()) {
-        return Err(Error::OutOfRange { name: "source", value: e, unit: "V", allowed: Allowed::Between(0.0, 1e150) });
+        return Err(Error::OutOfRange {
+            name: "source",
+            value: e,
+            unit: "V",
+            allowed: Allowed::Between(0.0, 1e150),
+        });
     }
     Ok(Delivery {
         current: ElectricCurrent::new::<ampere>(i),

@@ -214,7 +214,12 @@ fn check(root: Source, tree: &[TreeNode], states: &[NodeState]) -> Result<(), Er
         }
         if !node.load.current.value.is_finite() {
             let value = node.load.current.get::<ampere>();
-            return Err(Error::OutOfRange { name: "current of a load", value, unit: "A", allowed: Allowed::Finite });
+            return Err(Error::OutOfRange {
+                name: "current of a load",
+                value,
+                unit: "A",
+                allowed: Allowed::Finite,
+            });
         }
         if let Some(source) = node.source {
             positive("source", source.emf.get::<volt>(), "V")?;
@@ -293,11 +298,15 @@ mod tests {
         let mut worst = 0.0_f64;
         for (i, n) in tree.iter().enumerate() {
             let v = state[i].voltage.value;
-            let children: f64 =
-                (1..tree.len()).filter(|&c| tree[c].parent == i && c != i).map(|c| state[c].current.value).sum();
-            let load = n.load.current.value + n.load.resistive.value * v / (24.0 * 24.0) + n.load.power.value / v;
+            let children: f64 = (1..tree.len())
+                .filter(|&c| tree[c].parent == i && c != i)
+                .map(|c| state[c].current.value)
+                .sum();
+            let load =
+                n.load.current.value + n.load.resistive.value * v / (24.0 * 24.0) + n.load.power.value / v;
             let source = n.source.map_or(0.0, |s| (s.emf.value - v) / s.resistance.value);
-            let (upper, r) = if i == 0 { (emf, root_ohm) } else { (state[n.parent].voltage.value, n.resistance.value) };
+            let (upper, r) =
+                if i == 0 { (emf, root_ohm) } else { (state[n.parent].voltage.value, n.resistance.value) };
             worst = worst.max((state[i].current.value + source - children - load).abs());
             worst = worst.max((upper - r * state[i].current.value - v).abs());
         }

@@ -55,9 +55,7 @@ pub enum PoleFault {
 /// ```
 pub const fn pole_fault(earthing: Earthing, pole: Pole) -> Option<PoleFault> {
     match (earthing, pole) {
-        (_, Pole::Both)
-        | (Earthing::Negative, Pole::Positive)
-        | (Earthing::Positive, Pole::Negative) => None,
+        (_, Pole::Both) | (Earthing::Negative, Pole::Positive) | (Earthing::Positive, Pole::Negative) => None,
         (Earthing::Negative, Pole::Negative) | (Earthing::Positive, Pole::Positive) => {
             Some(PoleFault::EarthedPoleAlone)
         }
@@ -92,7 +90,9 @@ pub struct Feeds {
 /// # Ok::<(), ampwright::Error>(())
 /// ```
 pub fn feeds(parents: &[usize], has_source: &[bool], ends: &mut [Feeds]) -> Result<(), Error> {
-    let wrong = Error::NotATree { what: "a node hangs from itself or from a later node; list every parent before its children" };
+    let wrong = Error::NotATree {
+        what: "a node hangs from itself or from a later node; list every parent before its children",
+    };
     if parents.len() != has_source.len() || parents.len() != ends.len() {
         return Err(wrong);
     }

@@ -3,6 +3,7 @@
 //! Public functions take and return [`uom`] quantities; this room re-exports those in use and adds the values
 //! that are more than a number: conductor sizes, states of charge, charge rates.
 
+mod figures;
 mod rate;
 mod readable;
 mod size;
@@ -10,6 +11,7 @@ mod text;
 mod textual;
 mod unit;
 
+pub use figures::Figures;
 pub use rate::{ChargeRate, StateOfCharge};
 pub use readable::{Readable, readable};
 pub use size::{ConductorSize, Designation};

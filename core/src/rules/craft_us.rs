@@ -143,6 +143,7 @@ pub(super) static SET: RuleSet = RuleSet {
         Check::OpensLate,
         Check::Drop,
         Check::LoadVoltage,
+        Check::StartVoltage,
         Check::DeviceSupply,
         Check::Breaking,
         Check::LeastFault,

@@ -187,6 +187,8 @@ pub enum Check {
     Drop,
     /// Volts at the load against its least supply voltage.
     LoadVoltage,
+    /// Volts at the load while it starts (R16).
+    StartVoltage,
     /// Interrupting rating against the greatest prospective current (R6).
     Breaking,
     /// Least prospective current operates the device (R6).

@@ -104,6 +104,11 @@ static TABLES_FREE_AIR: &[&AmpacityTable] = &[&TABLE_310_17];
 
 static BUNDLED: Grouping = Grouping { table: &BUNDLING, column: 0, count: Count::Conductors };
 
+const FIVE_FEET: Option<Limit<f64>> = Some(Limit {
+    value: 1.524,
+    citation: cite("240.21(H), as close as practicable; 690.71(H) of 2014, 5 ft", Seen::Recalled),
+});
+
 /// The rule set `us`.
 pub(super) static SET: RuleSet = RuleSet {
     key: Key::Us,
@@ -125,6 +130,7 @@ pub(super) static SET: RuleSet = RuleSet {
         Check::OpensLate,
         Check::Drop,
         Check::LoadVoltage,
+        Check::StartVoltage,
         Check::DeviceSupply,
         Check::Breaking,
         Check::LeastFault,
@@ -187,7 +193,8 @@ pub(super) static SET: RuleSet = RuleSet {
         ),
     },
     // 240.21 asks for the device where the conductor is supplied and gives no length for a battery's.
-    unfused: UnfusedRule { plain: None, sheathed: None, sheathed_from_post: None },
+    // As close as practicable to the battery; beyond 5 ft the article on storage asks for a device at the battery's end.
+    unfused: UnfusedRule { plain: FIVE_FEET, sheathed: FIVE_FEET, sheathed_from_post: FIVE_FEET },
     drop: DropRule {
         critical: Limit { value: 0.03, citation: cite("210.19(A), informational note", Seen::Page) },
         lighting: Limit { value: 0.05, citation: cite("215.2(A), informational note", Seen::Page) },

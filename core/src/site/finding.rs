@@ -5,7 +5,8 @@ use alloc::string::{String, ToString};
 use core::fmt;
 
 use crate::cable::Material;
-use crate::circuit::{Checked, Outcome};
+use crate::circuit::{Checked, Outcome, Relation};
+use crate::quantity::Figures;
 use crate::rules::Check;
 
 /// How grave a finding is.
@@ -71,7 +72,9 @@ impl fmt::Display for Finding {
 const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'static str) {
     match check {
         Check::Conductor => ("R18", "conductor-refused", Severity::Nonconforming, "replace the conductor"),
-        Check::LeastSize => ("R4", "conductor-below-least-size", Severity::Nonconforming, "use a larger conductor"),
+        Check::LeastSize => {
+            ("R4", "conductor-below-least-size", Severity::Nonconforming, "use a larger conductor")
+        }
         Check::TerminalColumn => (
             "R4",
             "terminal-column-exceeded",
@@ -90,24 +93,29 @@ const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'stati
             Severity::Nonconforming,
             "use a larger device, and a conductor that it protects",
         ),
-        Check::DeviceProtects => (
-            "R4",
-            "device-above-ampacity",
-            Severity::Danger,
-            "use a smaller device or a larger conductor",
-        ),
+        Check::DeviceProtects => {
+            ("R4", "device-above-ampacity", Severity::Danger, "use a smaller device or a larger conductor")
+        }
         Check::OpensLate => (
             "R5",
             "device-opens-late",
             Severity::Danger,
             "use a smaller rating, a family that opens earlier, or a larger conductor",
         ),
-        Check::Drop => ("R17", "drop-exceeded", Severity::Nonconforming, "use a larger conductor or a shorter run"),
+        Check::Drop => {
+            ("R17", "drop-exceeded", Severity::Nonconforming, "use a larger conductor or a shorter run")
+        }
         Check::LoadVoltage => (
             "R3",
             "voltage-too-low-at-load",
             Severity::Nonconforming,
             "use larger conductors on its path, or a higher cut-off",
+        ),
+        Check::StartVoltage => (
+            "R16",
+            "start-voltage-too-low",
+            Severity::Nonconforming,
+            "use larger conductors on its path, or a soft start",
         ),
         Check::Breaking => (
             "R6",
@@ -143,7 +151,13 @@ const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'stati
 }
 
 /// The finding of a check that was not passed; `None` for one that was.
-pub(super) fn of_check(checked: &Checked, place: &str, line: u32, material: Material, required: bool) -> Option<Finding> {
+pub(super) fn of_check(
+    checked: &Checked,
+    place: &str,
+    line: u32,
+    material: Material,
+    required: bool,
+) -> Option<Finding> {
     let (rule, slug, grave, remedy) = meaning(checked.check);
     let (severity, text) = match checked.outcome {
         Outcome::Passed => return None,
@@ -172,27 +186,13 @@ pub(super) fn of_check(checked: &Checked, place: &str, line: u32, material: Mate
 
 /// A failed check in words: what, value, limit.
 fn words(checked: &Checked) -> String {
-    use crate::circuit::Relation;
-    let Checked { what, actual, limit, unit, .. } = checked;
     match checked.relation {
-        Relation::Plain => (*what).to_string(),
-        Relation::AtMost => format!("{what}: {} {unit}, at most {} {unit}", digits(*actual), digits(*limit)),
-        Relation::AtLeast => format!("{what}: {} {unit}, at least {} {unit}", digits(*actual), digits(*limit)),
+        Relation::Plain => checked.what.to_string(),
+        Relation::AtMost | Relation::AtLeast => format!("{}: {}", checked.what, checked.numbers()),
     }
 }
 
-/// Three to four digits, as a table of the trade would print them.
+/// Digits as the trade prints them.
 pub(super) fn digits(value: f64) -> String {
-    let size = libm::fabs(value);
-    if size >= 1000.0 {
-        format!("{value:.0}")
-    } else if size >= 100.0 {
-        format!("{value:.1}").trim_end_matches(".0").to_string()
-    } else if size >= 1.0 {
-        format!("{value:.2}").trim_end_matches('0').trim_end_matches('.').to_string()
-    } else if value == 0.0 {
-        "0".to_string()
-    } else {
-        format!("{value:.3}")
-    }
+    Figures(value).to_string()
 }

@@ -16,9 +16,7 @@ use super::model::{LoadKind, Return, Site};
 use super::plan::sources;
 use crate::cable::{Conductor, least_linear_resistance, linear_resistance};
 use crate::error::Error;
-use crate::network::{
-    FaultNode, FaultState, NodeLoad, NodeState, Source, TreeNode, prospective, solve,
-};
+use crate::network::{FaultNode, FaultState, NodeLoad, NodeState, Source, TreeNode, prospective, solve};
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, ThermodynamicTemperature,
 };
@@ -40,6 +38,8 @@ pub(super) struct Flow {
     /// Nominal and highest voltage of its bank, V.
     pub nominal: f64,
     pub highest: f64,
+    /// A bank hangs at the far end or beyond it.
+    pub between_sources: bool,
     /// Of what hangs at the far end.
     pub usage: LoadUse,
     pub least_voltage: Option<f64>,
@@ -50,8 +50,10 @@ pub(super) struct Flow {
     /// Weakest sources at both ends.
     pub weakest_at_beginning: Option<Source>,
     pub weakest_at_end: Option<Source>,
-    /// Voltage at the far end while the largest start there runs, V, with that start's extra current.
+    /// Current that comes on top while the load at the far end starts, A.
     pub start: Option<f64>,
+    /// Loop resistance from the source to the circuit's beginning, ohm.
+    pub ohms_before: f64,
 }
 
 /// Conductors, positive and negative, and joints of a circuit.
@@ -68,10 +70,17 @@ pub(super) struct Flows {
 }
 
 impl Flows {
-    pub fn new(site: &Site, graph: &Graph, trees: &[Tree], wired: &[Wired], temperatures: &[Option<f64>]) -> Self {
+    pub fn new(
+        site: &Site,
+        graph: &Graph,
+        trees: &[Tree],
+        wired: &[Wired],
+        temperatures: &[Option<f64>],
+    ) -> Self {
         let banks = sources(site);
         let ohms = |index: usize| loop_ohms(site, wired, index, temperatures.get(index).copied().flatten());
-        let mut flows = Self { circuits: vec![none(); site.circuits.len()], collapse: None, collapsed: Vec::new() };
+        let mut flows =
+            Self { circuits: vec![none(); site.circuits.len()], collapse: None, collapsed: Vec::new() };
         for (number, tree) in trees.iter().enumerate() {
             let Some(Item::Bank(root)) = tree.nodes.first().map(|n| n.item) else { continue };
             let Some(bank) = site.banks.get(root) else { continue };
@@ -92,7 +101,9 @@ impl Flows {
                 Item::Bank(other) => Some(other),
                 _ => None,
             }) {
-                let (Some(turned), Some(bank)) = (graph.tree_from(other), site.banks.get(other)) else { continue };
+                let (Some(turned), Some(bank)) = (graph.tree_from(other), site.banks.get(other)) else {
+                    continue;
+                };
                 let solved = solve_tree(site, &turned, bank.nominal, bank.cut_off, &ohms)
                     .unwrap_or_else(|_| linear(site, &turned, bank.nominal, bank.cut_off, &ohms));
                 flows.take_currents(&turned, &solved);
@@ -102,35 +113,46 @@ impl Flows {
         // Stated currents and the user's own diversity.
         for (flow, circuit) in flows.circuits.iter_mut().zip(&site.circuits) {
             flow.current *= circuit.diversity;
-            if let Some(stated) = circuit.current {
-                flow.current = flow.current.max(stated.get::<ampere>());
+            if let Some(stated) = circuit.current.map(|a| a.get::<ampere>()) {
+                // Between two sources nobody but the user knows what flows; elsewhere the loads tell the least.
+                flow.current = if flow.between_sources { stated } else { flow.current.max(stated) };
             }
         }
         flows
     }
 
     /// What does not depend on currents: voltages, what hangs at the end, shares.
-    fn describe(&mut self, site: &Site, tree: &Tree, nominal: f64, highest: f64, ohms: &impl Fn(usize) -> f64) {
-        let mut sums = vec![(0.0, 0.0); tree.nodes.len()];
+    fn describe(
+        &mut self,
+        site: &Site,
+        tree: &Tree,
+        nominal: f64,
+        highest: f64,
+        ohms: &impl Fn(usize) -> f64,
+    ) {
+        let mut sums = vec![(0.0, 0.0, false); tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate().rev() {
             let (continuous, whole) = nominal_watts(site, node.item, nominal);
             let Some(own) = sums.get_mut(index) else { continue };
             own.0 += continuous;
             own.1 += whole;
+            own.2 |= matches!(node.item, Item::Bank(_));
             let own = *own;
             if index > 0
                 && let Some(parent) = sums.get_mut(node.parent)
             {
                 parent.0 += own.0;
                 parent.1 += own.1;
+                parent.2 |= own.2;
             }
         }
-        for (node, (continuous, whole)) in tree.nodes.iter().zip(sums) {
+        for (node, (continuous, whole, bank)) in tree.nodes.iter().zip(sums) {
             let Some(index) = node.circuit else { continue };
             let Some(flow) = self.circuits.get_mut(index) else { continue };
             flow.nominal = nominal;
             flow.highest = highest;
             flow.ohms = ohms(index);
+            flow.between_sources = bank;
             // Where nothing is known of the use (bank to bank), all of it counts as continuous.
             flow.continuous_share = if whole > 0.0 { continuous / whole } else { 1.0 };
             match node.item {
@@ -171,12 +193,12 @@ impl Flows {
         for (index, node) in tree.nodes.iter().enumerate() {
             let Some(circuit) = node.circuit else { continue };
             let above = states.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
-            let here = states.get(index).map_or(0.0, |s| s.voltage.get::<volt>());
             let upstream = path_ohms.get(node.parent).copied().unwrap_or(0.0);
             let Some(flow) = self.circuits.get_mut(circuit) else { continue };
             // A collapsed network may fall below zero here; a run begins at some positive voltage.
             flow.beginning = above.max(0.01 * emf);
             flow.drop_before = (emf - above).clamp(0.0, emf);
+            flow.ohms_before = upstream;
             if let Some(own) = path_ohms.get_mut(index) {
                 *own = upstream + flow.ohms;
             }
@@ -187,8 +209,7 @@ impl Flows {
                 let count = f64::from(load.count.max(1));
                 // One of them starts while the rest runs.
                 let running = states.get(index).map_or(0.0, |s| s.current.get::<ampere>()) / count;
-                let extra = (start.get::<ampere>() - running).max(0.0);
-                flow.start = Some(here - extra * (upstream + flow.ohms));
+                flow.start = Some((start.get::<ampere>() - running).max(0.0));
             }
         }
     }
@@ -209,23 +230,24 @@ impl Flows {
         let unknown = |pick: fn(&Ends) -> Option<Source>| {
             tree.nodes.iter().any(|n| matches!(n.item, Item::Bank(_)) && source(n.item, pick).is_none())
         };
-        let run = |pick: fn(&Ends) -> Option<Source>, ohms: &dyn Fn(usize) -> f64| -> Option<Vec<FaultState>> {
-            // One bank of unknown current makes every sum unknown.
-            if unknown(pick) {
-                return None;
-            }
-            let nodes: Vec<FaultNode> = tree
-                .nodes
-                .iter()
-                .map(|n| FaultNode {
-                    parent: n.parent,
-                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
-                    source: source(n.item, pick),
-                })
-                .collect();
-            let mut states = vec![FaultState::default(); nodes.len()];
-            prospective(&nodes, &mut states).ok().map(|()| states)
-        };
+        let run =
+            |pick: fn(&Ends) -> Option<Source>, ohms: &dyn Fn(usize) -> f64| -> Option<Vec<FaultState>> {
+                // One bank of unknown current makes every sum unknown.
+                if unknown(pick) {
+                    return None;
+                }
+                let nodes: Vec<FaultNode> = tree
+                    .nodes
+                    .iter()
+                    .map(|n| FaultNode {
+                        parent: n.parent,
+                        resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
+                        source: source(n.item, pick),
+                    })
+                    .collect();
+                let mut states = vec![FaultState::default(); nodes.len()];
+                prospective(&nodes, &mut states).ok().map(|()| states)
+            };
         let strongest = run(|e| e.strongest, &|c| cold_ohms(site, wired, c));
         let weakest = run(|e| e.weakest, &|c| loop_ohms(site, wired, c, None));
         for (index, node) in tree.nodes.iter().enumerate() {
@@ -251,6 +273,7 @@ const fn none() -> Flow {
         ohms: 0.0,
         nominal: 0.0,
         highest: 0.0,
+        between_sources: false,
         usage: LoadUse::Other,
         least_voltage: None,
         load_terminal: None,
@@ -259,6 +282,7 @@ const fn none() -> Flow {
         weakest_at_beginning: None,
         weakest_at_end: None,
         start: None,
+        ohms_before: 0.0,
     }
 }
 
@@ -286,7 +310,12 @@ fn nominal_watts(site: &Site, item: Item, nominal: f64) -> (f64, f64) {
 }
 
 /// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
-fn node_load(site: &Site, item: Item, nominal: ElectricPotential, as_current: Option<ElectricPotential>) -> NodeLoad {
+fn node_load(
+    site: &Site,
+    item: Item,
+    nominal: ElectricPotential,
+    as_current: Option<ElectricPotential>,
+) -> NodeLoad {
     let mut node = NodeLoad { reference: nominal, ..NodeLoad::default() };
     let (_, whole) = nominal_watts(site, item, nominal.get::<volt>());
     let whole = Power::new::<watt>(whole);

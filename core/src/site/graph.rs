@@ -90,7 +90,9 @@ impl Graph {
         let mut queue = VecDeque::new();
         queue.push_back((start, 0, None, false));
         while let Some((item_index, parent, circuit, reversed)) = queue.pop_front() {
-            let Some((item, known)) = self.items.get(item_index).zip(seen.get_mut(item_index)) else { continue };
+            let Some((item, known)) = self.items.get(item_index).zip(seen.get_mut(item_index)) else {
+                continue;
+            };
             if core::mem::replace(known, true) {
                 continue;
             }

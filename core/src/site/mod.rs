@@ -5,7 +5,10 @@ mod finding;
 mod flow;
 mod graph;
 mod model;
+mod offers;
 mod plan;
+mod plant;
+mod reach;
 mod read;
 mod report;
 mod text;
@@ -16,5 +19,5 @@ pub use model::{
     BankEntry, Board, CircuitEntry, DeviceEntry, Earthing, End, InverterEntry, JointEntry, LoadEntry,
     LoadKind, Part, PartKind, Pole, Return, Site, Stock, StockCable, StockDevice, StockLug,
 };
-pub use report::{CircuitLine, DeviceLine, Purchase, Report, inspect};
 pub use read::{Problem, Problems, read, read_bytes};
+pub use report::{CircuitLine, DeviceLine, Purchase, Report, inspect};

@@ -17,13 +17,13 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::bank;
 use super::flow::{Flow, Flows};
 use super::graph::{Graph, Tree};
-use super::model::{CircuitEntry, DeviceEntry, Return, Site};
+use super::model::{CircuitEntry, Return, Site};
+use super::offers::{Offers, complete, joints};
 use super::read::{Problem, Problems};
-use crate::cable::{Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance};
+use crate::cable::Conductor;
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
-use crate::device::{Device, Family, Polarity, Supply};
 use crate::error::Error;
-use crate::protection::{End, Feeds, Guard, Offer, choose, feeds, least_rating};
+use crate::protection::{End, Feeds, Guard, feeds};
 use crate::quantity::{ConductorSize, ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
 use crate::rules::Check;
 
@@ -92,12 +92,12 @@ pub(super) struct Plan {
 }
 
 /// A circuit before it is judged.
-struct Draft {
-    positive: Conductor,
-    negative: Conductor,
-    offered: Option<usize>,
-    refused: Vec<Refused>,
-    joints: ElectricalResistance,
+pub(super) struct Draft {
+    pub positive: Conductor,
+    pub negative: Conductor,
+    pub offered: Option<usize>,
+    pub refused: Vec<Refused>,
+    pub joints: ElectricalResistance,
 }
 
 /// Makes the plan.
@@ -150,11 +150,14 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
             false => return Ok(Plan { trees, circuits: planned, collapsed: flows.collapsed }),
         }
     }
-    Err(Problems(alloc::vec![Problem {
-        line: 0,
-        place: "design".to_string(),
-        text: "the design did not settle; state the sizes of some circuits".to_string(),
-    }], 0))
+    Err(Problems(
+        alloc::vec![Problem {
+            line: 0,
+            place: "design".to_string(),
+            text: "the design did not settle; state the sizes of some circuits".to_string(),
+        }],
+        0,
+    ))
 }
 
 /// Where the network collapses: enlarges the designed run of the greatest resistance on the path. `None` where
@@ -250,19 +253,25 @@ fn judge_all(
     for tree in trees {
         for node in &tree.nodes {
             let Some(index) = node.circuit else { continue };
-            let parts = (site.circuits.get(index), drafts.get(index), feeding.get(index), flows.circuits.get(index));
+            let parts =
+                (site.circuits.get(index), drafts.get(index), feeding.get(index), flows.circuits.get(index));
             let (Some(circuit), Some(draft), Some(&ends), Some(&flow)) = parts else { continue };
             // The device further up, for a circuit that has none of its own at its feeding end.
             let upstream = tree.nodes.get(node.parent).and_then(|p| p.circuit).and_then(|above| {
                 let planned = planned.get(above)?.as_ref()?;
                 if planned.fitted.is_empty() { planned.guarded_by } else { Some(above) }
             });
-            let done = judge_one(site, offers, &planned, Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream })
-                .map_err(|error| Problem {
-                    line: circuit.line,
-                    place: format!("[[circuit]] \"{}\"", circuit.name),
-                    text: error.to_string(),
-                })?;
+            let done = judge_one(
+                site,
+                offers,
+                &planned,
+                Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream },
+            )
+            .map_err(|error| Problem {
+                line: circuit.line,
+                place: format!("[[circuit]] \"{}\"", circuit.name),
+                text: error.to_string(),
+            })?;
             if let Some(slot) = planned.get_mut(index) {
                 *slot = Some(done);
             }
@@ -281,12 +290,15 @@ struct Task<'a> {
     upstream: Option<usize>,
 }
 
-fn judge_one(site: &Site, offers: &Offers, planned: &[Option<Planned>], task: Task<'_>) -> Result<Planned, Error> {
+fn judge_one(
+    site: &Site,
+    offers: &Offers,
+    planned: &[Option<Planned>],
+    task: Task<'_>,
+) -> Result<Planned, Error> {
     let Task { index, circuit, draft, ends, flow, reversed, upstream } = task;
-    let run = run_of(site, circuit, draft, &flow, reversed);
+    let run = run_of(site, circuit, draft, &flow);
     let bare = judge(&run, &draft.positive, &draft.negative, None)?;
-    let fitted = fit(circuit, index, offers, &run, draft, &bare, ends, reversed);
-
     // The device at the end that the source feeds comes first; further ones see their own fault currents.
     let at = |end: End| {
         let mut seen = run;
@@ -297,22 +309,23 @@ fn judge_one(site: &Site, offers: &Offers, planned: &[Option<Planned>], task: Ta
         }
         seen
     };
+    let fitted = fit(circuit, index, offers, &at, draft, &bare, ends, reversed);
     let mut guarded_by = None;
     let judgement = match (fitted.first(), upstream) {
         (Some(first), _) => judge(&at(first.end), &draft.positive, &draft.negative, Some(&first.guard))?,
         (None, Some(above)) => {
             guarded_by = Some(above);
-            let guard = planned
-                .get(above)
-                .and_then(|p| p.as_ref())
-                .and_then(|p| p.fitted.first())
-                .map(|f| f.guard);
+            let guard =
+                planned.get(above).and_then(|p| p.as_ref()).and_then(|p| p.fitted.first()).map(|f| f.guard);
             match guard {
                 Some(guard) => {
                     let mut judged = judge(&run, &draft.positive, &draft.negative, Some(&guard))?;
                     // Its terminals and supply are judged where it sits.
                     judged.checks.retain(|c| {
-                        !matches!(c.check, Check::Termination | Check::DeviceSupply | Check::DeviceCarries | Check::Breaking)
+                        !matches!(
+                            c.check,
+                            Check::Termination | Check::DeviceSupply | Check::DeviceCarries | Check::Breaking
+                        )
                     });
                     judged
                 }
@@ -342,7 +355,7 @@ fn judge_one(site: &Site, offers: &Offers, planned: &[Option<Planned>], task: Ta
 }
 
 /// The circuit as a run of the circuit floor.
-fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow, _reversed: bool) -> Run {
+fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Run {
     let current = ElectricCurrent::new::<ampere>(flow.current);
     let continuous = current * Ratio::new::<ratio>(flow.continuous_share);
     Run {
@@ -369,6 +382,8 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow, _reve
         usage: flow.usage,
         drop: circuit.drop,
         least_voltage: flow.least_voltage.map(ElectricPotential::new::<volt>),
+        start: flow.start.map(ElectricCurrent::new::<ampere>),
+        resistance_before: ElectricalResistance::new::<ohm>(flow.ohms_before),
         greatest_fault: flow.fault_at_beginning,
         weakest_source: flow.weakest_at_beginning,
     }
@@ -390,7 +405,7 @@ fn fit(
     circuit: &CircuitEntry,
     index: usize,
     offers: &Offers,
-    run: &Run,
+    run_at: &dyn Fn(End) -> Run,
     draft: &Draft,
     bare: &Judgement,
     ends: Feeds,
@@ -403,14 +418,20 @@ fn fit(
             let feeding = if end == End::From { ends.from } else { ends.to };
             if feeding
                 && !circuit.no_device
-                && let Some(guard) = offers.best(run, draft, bare, None)
+                && let Some(guard) = offers.best(&run_at(end), draft, bare, None)
             {
                 let suffix = if ends.from && ends.to {
                     if end == End::From { " at from" } else { " at to" }
                 } else {
                     ""
                 };
-                fitted.push(Fitted { name: format!("Q{}{suffix}", index + 1), guard, end, entry: None, designed: true });
+                fitted.push(Fitted {
+                    name: format!("Q{}{suffix}", index + 1),
+                    guard,
+                    end,
+                    entry: None,
+                    designed: true,
+                });
             }
         }
         return fitted;
@@ -419,7 +440,7 @@ fn fit(
         let complete = complete(stated);
         let guard = match complete {
             Some(guard) => Some(guard),
-            None => offers.best(run, draft, bare, Some(stated)),
+            None => offers.best(&run_at(stated.end), draft, bare, Some(stated)),
         };
         if let Some(guard) = guard {
             fitted.push(Fitted {
@@ -435,221 +456,6 @@ fn fit(
     let first = if reversed { End::To } else { End::From };
     fitted.sort_by_key(|f| f.end != first);
     fitted
-}
-
-/// A stated device, if family and rating are stated.
-fn complete(stated: &DeviceEntry) -> Option<Guard> {
-    let (family, rating) = stated.family.zip(stated.rating)?;
-    Some(Guard {
-        device: Device {
-            family,
-            rating,
-            supply: stated.supply,
-            breaking: stated.breaking,
-            polarity: stated.polarity,
-            full_rated: stated.full_rated,
-        },
-        let_through_A2s: stated.let_through_A2s,
-        terminal_range: stated.terminal_range,
-        terminal_degC: stated.terminal.map(|t| t.get::<degree_celsius>()),
-    })
-}
-
-/// What can be had: from the stock, else standard sizes and plain generic parts.
-struct Offers {
-    sizes: Vec<Conductor>,
-    devices: Vec<OwnedOffer>,
-    generic_devices: bool,
-}
-
-struct OwnedOffer {
-    family: Family,
-    ratings_A: Vec<f64>,
-    supply: Supply,
-    breaking: Option<ElectricCurrent>,
-    polarity: Polarity,
-    full_rated: bool,
-    let_through_A2s: Option<f64>,
-    terminal_range: Option<(ConductorSize, ConductorSize)>,
-    terminal_degC: Option<f64>,
-}
-
-impl Offers {
-    fn new(site: &Site) -> Self {
-        let mut sizes: Vec<Conductor> = site
-            .stock
-            .cables
-            .iter()
-            .map(|c| Conductor {
-                size: c.size,
-                material: c.material,
-                class: c.class,
-                coating: c.coating,
-                insulation: c.insulation,
-            })
-            .collect();
-        if sizes.is_empty() {
-            sizes = site
-                .rules
-                .sizes()
-                .iter()
-                .map(|&size| Conductor {
-                    size,
-                    material: Material::Copper,
-                    class: Class::Flexible,
-                    coating: Coating::Plain,
-                    insulation: site.rules.usual_insulation(),
-                })
-                .collect();
-        }
-        sizes.sort_by(|a, b| a.size.area_mm2().total_cmp(&b.size.area_mm2()));
-        let mut devices: Vec<OwnedOffer> = site
-            .stock
-            .devices
-            .iter()
-            .map(|d| {
-                let mut ratings: Vec<f64> = d.ratings.iter().map(|r| r.get::<ampere>()).collect();
-                ratings.sort_by(f64::total_cmp);
-                OwnedOffer {
-                    family: d.family,
-                    ratings_A: ratings,
-                    supply: d.supply,
-                    breaking: d.breaking,
-                    polarity: d.polarity,
-                    full_rated: d.full_rated,
-                    let_through_A2s: d.let_through_A2s,
-                    terminal_range: d.terminal_range,
-                    terminal_degC: d.terminal.map(|t| t.get::<degree_celsius>()),
-                }
-            })
-            .collect();
-        let generic_devices = devices.is_empty();
-        if generic_devices {
-            devices = site
-                .rules
-                .usual_families()
-                .iter()
-                .map(|&family| OwnedOffer {
-                    family,
-                    ratings_A: Vec::new(),
-                    supply: Supply::NotStated,
-                    breaking: None,
-                    polarity: Polarity::None,
-                    full_rated: false,
-                    let_through_A2s: None,
-                    terminal_range: None,
-                    terminal_degC: None,
-                })
-                .collect();
-        }
-        Self { sizes, devices, generic_devices }
-    }
-
-    /// A circuit's conductors: as stated, or the smallest on offer.
-    fn draft(&self, site: &Site, circuit: &CircuitEntry) -> Result<Draft, Problem> {
-        let insulation = circuit.insulation.unwrap_or_else(|| site.rules.usual_insulation());
-        let stated = |size| Conductor {
-            size,
-            material: circuit.material,
-            class: circuit.class,
-            coating: circuit.coating,
-            insulation,
-        };
-        let (positive, negative, offered) = match circuit.size {
-            Some(size) => (stated(size), stated(circuit.negative_size.unwrap_or(size)), None),
-            None => {
-                let Some(first) = self.sizes.first() else {
-                    return Err(Problem {
-                        line: circuit.line,
-                        place: format!("[[circuit]] \"{}\"", circuit.name),
-                        text: "no conductor is on offer; add [[stock.cable]] or state size".to_string(),
-                    });
-                };
-                (*first, *first, Some(0))
-            }
-        };
-        Ok(Draft { positive, negative, offered, refused: Vec::new(), joints: joints(circuit, &[]) })
-    }
-
-    /// The device that suits a run: the first offer, in the order of the stock, whose smallest sufficient rating
-    /// fails no check; else the one that fails fewest.
-    fn best(&self, run: &Run, draft: &Draft, bare: &Judgement, stated: Option<&DeviceEntry>) -> Option<Guard> {
-        let mut fallback: Option<(usize, Guard)> = None;
-        for owned in &self.devices {
-            let family = stated.and_then(|s| s.family).unwrap_or(owned.family);
-            let fixed = stated.and_then(|s| s.rating).map(|r| [r.get::<ampere>()]);
-            let fixed = fixed.as_ref().map(<[f64; 1]>::as_slice);
-            let mut offer = Offer {
-                family,
-                ratings_A: fixed.unwrap_or(if family == owned.family { &owned.ratings_A } else { &[] }),
-                supply: owned.supply,
-                breaking: owned.breaking,
-                polarity: owned.polarity,
-                full_rated: owned.full_rated,
-                let_through_A2s: owned.let_through_A2s,
-                terminal_range: owned.terminal_range,
-                terminal_degC: owned.terminal_degC,
-            };
-            if self.generic_devices {
-                // A part to be bought is bought for its place: the requirement becomes the specification.
-                offer.supply = Supply::Dc(run.highest);
-                offer.breaking = run.greatest_fault;
-            }
-            if let Some(stated) = stated {
-                offer.supply = if stated.supply == Supply::NotStated { offer.supply } else { stated.supply };
-                offer.breaking = stated.breaking.or(offer.breaking);
-                offer.terminal_range = stated.terminal_range.or(offer.terminal_range);
-                offer.full_rated |= stated.full_rated;
-            }
-            let carries = Ratio::new::<ratio>(family.data().continuous_ratio);
-            let factor = run.rules.continuous_factor().value;
-            let need = least_rating(
-                bare.continuous,
-                bare.current - bare.continuous,
-                carries,
-                offer.full_rated,
-                factor,
-            );
-            let Ok(guard) = choose(&offer, |_| if fixed.is_some() { ElectricCurrent::default() } else { need }) else {
-                continue;
-            };
-            let Ok(judged) = judge(run, &draft.positive, &draft.negative, Some(&guard)) else { continue };
-            let failures = judged.checks.iter().filter(|c| c.outcome == Outcome::Failed).count();
-            if failures == 0 {
-                return Some(guard);
-            }
-            if fallback.is_none_or(|(fewest, _)| failures < fewest) {
-                fallback = Some((failures, guard));
-            }
-        }
-        fallback.map(|(_, guard)| guard)
-    }
-}
-
-/// All joints of a circuit: stated ones, else a lug at each of four conductor ends; its parts; its devices as fitted.
-fn joints(circuit: &CircuitEntry, fitted: &[Fitted]) -> ElectricalResistance {
-    let mut sum = ElectricalResistance::new::<ohm>(0.0);
-    if circuit.joints.is_empty() {
-        sum += 4.0 * joint_resistance(JointKind::Lug);
-    }
-    for joint in &circuit.joints {
-        sum += f64::from(joint.count) * joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind));
-    }
-    for part in &circuit.parts {
-        sum += part.resistance.unwrap_or_else(|| rated(part.kind.joint(), part.rating));
-    }
-    for device in fitted.iter().map(|f| f.guard.device) {
-        let kind = if device.family.data().is_fuse { JointKind::Fuse } else { JointKind::Breaker };
-        sum += rated(kind, Some(device.rating));
-    }
-    sum
-}
-
-/// Generic resistance of a part, by its rating where that is known.
-fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
-    rating
-        .and_then(|rating| rated_joint_resistance(kind, rating).ok())
-        .unwrap_or_else(|| joint_resistance(kind))
 }
 
 /// Enlarges what fails; `true` where something grew.
@@ -674,7 +480,7 @@ fn enlarge(
                     .checks
                     .iter()
                     .chain(p.further.iter().flat_map(|j| j.checks.iter()))
-                    .find(|c| c.outcome == Outcome::Failed && path == matches!(c.check, Check::Drop | Check::LoadVoltage))
+                    .find(|c| c.outcome == Outcome::Failed && path == is_of_path(c.check))
                     .copied()
             };
             // What a larger conductor of this circuit mends.
@@ -691,7 +497,10 @@ fn enlarge(
             // What a larger conductor anywhere on the path mends: the one that loses most grows.
             if let Some(check) = failed(p, true) {
                 let path = path_to(tree, index);
-                if !path.iter().any(|&c| planned.get(c).and_then(|p| p.as_ref()).is_some_and(Planned::designed)) {
+                if !path
+                    .iter()
+                    .any(|&c| planned.get(c).and_then(|p| p.as_ref()).is_some_and(Planned::designed))
+                {
                     continue;
                 }
                 let mut worst: Option<(usize, f64)> = None;
@@ -706,7 +515,8 @@ fn enlarge(
                 }
                 match worst {
                     Some((c, _)) => {
-                        let reason = if c == circuit { Reason::Check(check) } else { Reason::Path(check, circuit) };
+                        let reason =
+                            if c == circuit { Reason::Check(check) } else { Reason::Path(check, circuit) };
                         grew |= grow(c, drafts, offers, reason);
                         // One enlargement of a path at a time: the next pass sees its effect.
                         if c != circuit {
@@ -720,6 +530,11 @@ fn enlarge(
         }
     }
     if problems.is_empty() { Ok(grew) } else { Err(Problems(problems, 0)) }
+}
+
+/// Whether a larger conductor anywhere on the path mends a failed check.
+const fn is_of_path(check: Check) -> bool {
+    matches!(check, Check::Drop | Check::LoadVoltage | Check::StartVoltage)
 }
 
 /// Whether a larger conductor mends a failed check.

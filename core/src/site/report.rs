@@ -4,7 +4,6 @@ use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
 
-use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 use uom::si::thermodynamic_temperature::degree_celsius;
@@ -249,7 +248,9 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
         match list.iter_mut().find(|p| p.what == what && p.unit == unit) {
             Some(line) => {
                 line.amount += amount;
-                line.places.push(place.to_string());
+                if line.places.last().is_none_or(|last| last != place) {
+                    line.places.push(place.to_string());
+                }
                 line.price = line.price.zip(price).map(|(a, b)| a + b);
             }
             None => list.push(Purchase { amount, unit, what, places: alloc::vec![place.to_string()], price }),
@@ -287,7 +288,13 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
                         .iter()
                         .find(|l| l.size == planned.positive.size && l.stud == stud)
                         .and_then(|l| l.price);
-                    add(2.0, "pcs", format!("lug {} for {}", stud, planned.positive.size), &circuit.name, price);
+                    add(
+                        2.0,
+                        "pcs",
+                        format!("lug {} for {}", stud, planned.positive.size),
+                        &circuit.name,
+                        price,
+                    );
                 }
             }
         }
@@ -328,7 +335,10 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
         );
     }
     if site.circuits.iter().any(|c| (c.diversity - 1.0).abs() > f64::EPSILON) {
-        lines.push(format!("the user's own diversity: {}", names(&|c| (c.diversity - 1.0).abs() > f64::EPSILON)));
+        lines.push(format!(
+            "the user's own diversity: {}",
+            names(&|c| (c.diversity - 1.0).abs() > f64::EPSILON)
+        ));
     }
     lines.push(
         "worst hour: every load at once, bank at cut-off, constant-power loads solved at the volts that reach them; \

@@ -48,7 +48,11 @@ impl fmt::Display for Report {
         }
         self.bought(f)?;
         list(f, "Taken where the document says nothing", &self.assumptions)?;
-        list(f, "Rests on recalled figures: conforms to the recalled value only; verify on the page", &self.recalled)?;
+        list(
+            f,
+            "Rests on recalled figures: conforms to the recalled value only; verify on the page",
+            &self.recalled,
+        )?;
         list(f, "Not checked here", &self.not_covered)?;
         heading(f, "Cautions")?;
         for caution in CAUTIONS {
@@ -124,11 +128,8 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     let j = &c.judgement;
     let row = |f: &mut fmt::Formatter<'_>, head: &str, text: &str| writeln!(f, "    {head:<12} {text}");
     writeln!(f, "  {number}  {}: {} – {}", printable(&c.name), printable(&c.from), printable(&c.to))?;
-    let other = if c.negative == c.positive {
-        String::new()
-    } else {
-        format!(", negative {}", c.negative.size)
-    };
+    let other =
+        if c.negative == c.positive { String::new() } else { format!(", negative {}", c.negative.size) };
     let way = match c.run.space {
         Space::Ordinary => "",
         Space::Engine => ", engine space",
@@ -158,7 +159,8 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         ),
     )?;
     if let Some(a) = &j.ampacity {
-        let mut words = format!("{} A ({}, column {}, {})", digits(a.base.value), a.base.citation, a.column, a.row);
+        let mut words =
+            format!("{} A ({}, column {}, {})", digits(a.base.value), a.base.citation, a.column, a.row);
         for factor in &a.factors {
             words.push_str(&format!(" × {} {}", factor.value, factor.name));
         }
@@ -295,7 +297,7 @@ pub(super) fn device_words(guard: &Guard) -> String {
         Supply::NotStated => words.push_str(", DC voltage not stated"),
     }
     match device.breaking {
-        Some(amps) => words.push_str(&format!(", breaks {} A", rounded(amps.get::<ampere>()))),
+        Some(amps) => words.push_str(&format!(", breaks {} kA", digits(amps.get::<ampere>() / 1000.0))),
         None => words.push_str(", breaking capacity not stated"),
     }
     if device.polarity == Polarity::Marked {

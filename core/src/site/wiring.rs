@@ -2,6 +2,7 @@
 
 use alloc::format;
 use alloc::string::{String, ToString};
+use alloc::vec;
 use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
@@ -12,25 +13,25 @@ use super::finding::{Finding, Severity, digits, of_check};
 use super::graph::{Item, Tree};
 use super::model::{CircuitEntry, Return, Site};
 use super::plan::{Fitted, Plan, Planned};
+use super::plant::{banks, boards, consumers};
+use super::reach::Reach;
 use crate::cable::{Stud, joint_resistance, lug_fits};
+use crate::circuit::{Demand, Judgement, Outcome, Run, judge};
 use crate::citation::Citation;
 use crate::device::{Polarity, Supply};
-use crate::protection::{Earthing, End, PoleFault, pole_fault};
+use crate::protection::{End, PoleFault, pole_fault};
+use crate::quantity::ElectricCurrent;
 use crate::rules::Key;
 
-/// Highest voltage that may be touched without basic protection in dry places, V.
-const TOUCH_V: f64 = 60.0;
 /// Heat of one joint that deserves a look, W: common practice, no source.
 const JOINT_W: f64 = 5.0;
-/// Most lugs on one stud (R8).
-const LUGS: u32 = 4;
 
 /// Collects findings with their place.
 pub(super) struct Findings(pub Vec<Finding>);
 
 impl Findings {
     #[allow(clippy::too_many_arguments)] // the fields of a finding, in its order
-    fn add(
+    pub fn add(
         &mut self,
         severity: Severity,
         rule: &'static str,
@@ -49,10 +50,13 @@ impl Findings {
 /// All findings of a plan, gravest first, in the order of the document within.
 pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
     let mut found = Findings(Vec::new());
+    let reach = Reach::new(site, plan);
+    let ends = ends(&plan.trees, site.circuits.len());
     for (index, circuit) in site.circuits.iter().enumerate() {
         let Some(Some(planned)) = plan.circuits.get(index) else { continue };
-        let (parent, child) = ends_of(&plan.trees, index);
-        let at = Place { site, circuit, planned, parent, child };
+        let (parent, child) = ends.get(index).copied().unwrap_or((None, None));
+        let reach = reach.far.get(index).copied().zip(reach.near.get(index).copied()).unwrap_or((0.0, 0.0));
+        let at = Place { site, circuit, planned, parent, child, reach };
         at.checks(&mut found);
         at.devices(&mut found);
         at.missing_devices(&mut found);
@@ -60,7 +64,7 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
         at.parts(&mut found);
         at.lugs(&mut found);
         at.joints(&mut found);
-        at.start(&mut found);
+        at.sized_at_nominal(&mut found);
         if plan.collapsed.contains(&index) {
             found.add(
                 Severity::Danger,
@@ -68,7 +72,8 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
                 "no-solution",
                 at.place(),
                 circuit.line,
-                "no voltage carries the constant-power loads at this end and beyond: they pull the line down".to_string(),
+                "no voltage carries the constant-power loads at this end and beyond: they pull the line down"
+                    .to_string(),
                 None,
                 "use larger conductors on the path, less load or a higher voltage",
             );
@@ -81,14 +86,17 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
     found.0
 }
 
-/// Items on the source's side and at the far end of a circuit.
-fn ends_of(trees: &[Tree], circuit: usize) -> (Option<Item>, Option<Item>) {
+/// Items on the source's side and at the far end of each circuit.
+fn ends(trees: &[Tree], circuits: usize) -> Vec<(Option<Item>, Option<Item>)> {
+    let mut ends = vec![(None, None); circuits];
     for tree in trees {
-        if let Some(node) = tree.nodes.iter().find(|n| n.circuit == Some(circuit)) {
-            return (tree.nodes.get(node.parent).map(|p| p.item), Some(node.item));
+        for node in &tree.nodes {
+            if let Some(slot) = node.circuit.and_then(|c| ends.get_mut(c)) {
+                *slot = (tree.nodes.get(node.parent).map(|p| p.item), Some(node.item));
+            }
         }
     }
-    (None, None)
+    ends
 }
 
 struct Place<'a> {
@@ -97,6 +105,8 @@ struct Place<'a> {
     planned: &'a Planned,
     parent: Option<Item>,
     child: Option<Item>,
+    /// What devices further away let pass from the far side and from the source's side, A.
+    reach: (f64, f64),
 }
 
 impl Place<'_> {
@@ -105,10 +115,8 @@ impl Place<'_> {
     }
 
     fn of_device(&self, fitted: &Fitted) -> (String, u32) {
-        let line = fitted
-            .entry
-            .and_then(|e| self.circuit.devices.get(e))
-            .map_or(self.circuit.line, |d| d.line);
+        let line =
+            fitted.entry.and_then(|e| self.circuit.devices.get(e)).map_or(self.circuit.line, |d| d.line);
         (format!("circuit \"{}\", {}", self.circuit.name, fitted.name), line)
     }
 
@@ -120,18 +128,32 @@ impl Place<'_> {
     /// The checks of the run itself.
     fn checks(&self, found: &mut Findings) {
         use crate::rules::Check::{
-            Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate, Termination, Withstand,
+            Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate, Termination,
+            Withstand,
         };
         let of_device = |check| {
             matches!(
                 check,
-                Breaking | DeviceCarries | DeviceProtects | DeviceSupply | LeastFault | OpensLate | Termination | Withstand
+                Breaking
+                    | DeviceCarries
+                    | DeviceProtects
+                    | DeviceSupply
+                    | LeastFault
+                    | OpensLate
+                    | Termination
+                    | Withstand
             )
         };
-        let required = self.circuit.drop.is_some()
-            || self.site.rules.drop_limit(self.planned.run.usage).required;
+        let required =
+            self.circuit.drop.is_some() || self.site.rules.drop_limit(self.planned.run.usage).required;
         let material = self.planned.positive.material;
-        let first = self.planned.fitted.first().map(|f| self.of_device(f));
+        let first = match (self.planned.fitted.first(), self.planned.guarded_by) {
+            (Some(first), _) => Some(self.of_device(first)),
+            (None, Some(above)) => self.site.circuits.get(above).map(|c| {
+                (format!("{}, guarded only by the device of \"{}\"", self.place(), c.name), self.circuit.line)
+            }),
+            (None, None) => None,
+        };
         for checked in &self.planned.judgement.checks {
             let (place, line) = match &first {
                 Some(device) if of_device(checked.check) => device.clone(),
@@ -171,9 +193,15 @@ impl Place<'_> {
             let both = self.planned.feeds.from && self.planned.feeds.to;
             if both && fitted.guard.device.polarity == Polarity::Marked {
                 found.add(
-                    Severity::Danger, "R6", "polarity-reversible", place.clone(), line,
-                    "the device is marked for one polarity, but both ends can feed: the current can reverse".to_string(),
-                    None, "use a device without polarity",
+                    Severity::Danger,
+                    "R6",
+                    "polarity-reversible",
+                    place.clone(),
+                    line,
+                    "the device is marked for one polarity, but both ends can feed: the current can reverse"
+                        .to_string(),
+                    None,
+                    "use a device without polarity",
                 );
             }
             if let Some(entry) = entry {
@@ -218,7 +246,8 @@ impl Place<'_> {
         [self.parent, self.child].into_iter().flatten().find(|&item| name_of(self.site, item) == name)
     }
 
-    /// A device at every end that can feed (R7).
+    /// A device at every end that can feed, or devices further away that let no more pass than the conductor may
+    /// have (R7).
     fn missing_devices(&self, found: &mut Findings) {
         if self.is_exempt() {
             return;
@@ -230,16 +259,42 @@ impl Place<'_> {
             if !feeding || self.planned.fitted.iter().any(|f| f.end == end) {
                 continue;
             }
-            let far = matches!(self.item_at(end), item if item == self.child);
-            let text = match (far, self.planned.guarded_by) {
-                // Guarded from further up: the checks say whether that device does protect it.
-                (false, Some(_)) => continue,
-                (true, _) => format!("no device at the end \"{name}\", which can feed a fault on this circuit too"),
-                (false, None) => format!("no device between \"{name}\" and this circuit"),
+            let far = self.item_at(end) == self.child;
+            // Guarded from further up by one device: the checks have judged it.
+            if !far && self.planned.guarded_by.is_some() && !self.planned.feeds.to {
+                continue;
+            }
+            let passed = if far { self.reach.0 } else { self.reach.1 };
+            let limit = self.planned.judgement.ampacity.as_ref().map(|a| {
+                self.site.rules.device_limit(self.planned.positive.size, a.corrected).most.get::<ampere>()
+            });
+            let text = match limit {
+                _ if passed.is_infinite() => {
+                    format!("no device between a source at \"{name}\" or beyond and this circuit")
+                }
+                Some(limit) if passed <= limit => continue,
+                Some(limit) => format!(
+                    "no device at \"{name}\"; those further away let {} A pass, at most {} A",
+                    digits(passed),
+                    digits(limit)
+                ),
+                None => {
+                    found.add(
+                        Severity::NotChecked, "R7", "feeding-end-not-checked", self.place(), self.circuit.line,
+                        format!("check not made: no device at \"{name}\", and the conductor has no tabulated capacity"),
+                        None, "",
+                    );
+                    continue;
+                }
             };
             found.add(
-                Severity::Danger, "R7", if far { "second-feeding-end-unprotected" } else { "device-missing" },
-                self.place(), self.circuit.line, text, None,
+                Severity::Danger,
+                "R7",
+                if far { "second-feeding-end-unprotected" } else { "device-missing" },
+                self.place(),
+                self.circuit.line,
+                text,
+                None,
                 "fit a device at this end, close to the source",
             );
         }
@@ -257,9 +312,14 @@ impl Place<'_> {
             );
         } else if resistance.is_none() {
             found.add(
-                Severity::Danger, "R9", "chassis-return", self.place(), self.circuit.line,
+                Severity::Danger,
+                "R9",
+                "chassis-return",
+                self.place(),
+                self.circuit.line,
                 "the chassis carries the return current and its resistance is not stated".to_string(),
-                None, "run a return conductor, or measure and state return_resistance",
+                None,
+                "run a return conductor, or measure and state return_resistance",
             );
         }
     }
@@ -277,30 +337,62 @@ impl Place<'_> {
             let place = format!("circuit \"{}\", {}", self.circuit.name, part.name);
             match part.rating.map(|r| r.get::<ampere>()) {
                 None => found.add(
-                    Severity::NotChecked, "R8", "part-rating-not-stated", place.clone(), part.line,
-                    "check not made: rated current of the part".to_string(), None, "",
+                    Severity::NotChecked,
+                    "R8",
+                    "part-rating-not-stated",
+                    place.clone(),
+                    part.line,
+                    "check not made: rated current of the part".to_string(),
+                    None,
+                    "",
                 ),
                 Some(rating) if rating < need => found.add(
-                    Severity::Danger, "R8", "part-below-device", place.clone(), part.line,
-                    format!("rated {} A, but its device lets {} A pass for hours", digits(rating), digits(need)),
-                    None, "use a part rated for at least its device",
+                    Severity::Danger,
+                    "R8",
+                    "part-below-device",
+                    place.clone(),
+                    part.line,
+                    format!(
+                        "rated {} A, but its device lets {} A pass for hours",
+                        digits(rating),
+                        digits(need)
+                    ),
+                    None,
+                    "use a part rated for at least its device",
                 ),
                 Some(_) => {}
             }
             let highest = self.planned.run.highest.get::<volt>();
             match part.supply {
                 Supply::AcOnly => found.add(
-                    Severity::Danger, "R6", "part-not-for-dc", place, part.line,
-                    "the part is rated for AC only; on DC its arc need not go out".to_string(), None, "use a part rated for DC",
+                    Severity::Danger,
+                    "R6",
+                    "part-not-for-dc",
+                    place,
+                    part.line,
+                    "the part is rated for AC only; on DC its arc need not go out".to_string(),
+                    None,
+                    "use a part rated for DC",
                 ),
                 Supply::Dc(rated) if rated.get::<volt>() < highest => found.add(
-                    Severity::Danger, "R6", "part-voltage-too-low", place, part.line,
+                    Severity::Danger,
+                    "R6",
+                    "part-voltage-too-low",
+                    place,
+                    part.line,
                     format!("rated {} V DC, at least {} V", digits(rated.get::<volt>()), digits(highest)),
-                    None, "use a part rated for the highest voltage",
+                    None,
+                    "use a part rated for the highest voltage",
                 ),
                 Supply::NotStated => found.add(
-                    Severity::NotChecked, "R6", "part-voltage-not-stated", place, part.line,
-                    "check not made: voltage rating of the part on DC".to_string(), None, "",
+                    Severity::NotChecked,
+                    "R6",
+                    "part-voltage-not-stated",
+                    place,
+                    part.line,
+                    "check not made: voltage rating of the part on DC".to_string(),
+                    None,
+                    "",
                 ),
                 Supply::Dc(_) => {}
             }
@@ -309,21 +401,33 @@ impl Place<'_> {
 
     /// Lugs fit their studs.
     fn lugs(&self, found: &mut Findings) {
-        for (name, lug) in [(&self.circuit.from, self.circuit.from_lug), (&self.circuit.to, self.circuit.to_lug)] {
-            let item = [self.parent, self.child].into_iter().flatten().find(|&i| name_of(self.site, i) == name);
+        for (name, lug) in
+            [(&self.circuit.from, self.circuit.from_lug), (&self.circuit.to, self.circuit.to_lug)]
+        {
+            let item =
+                [self.parent, self.child].into_iter().flatten().find(|&i| name_of(self.site, i) == name);
             let Some(stud) = item.and_then(|i| stud_of(self.site, i)) else { continue };
             match lug {
                 Some(lug) if !lug_fits(lug, stud) => found.add(
-                    Severity::Nonconforming, "R8",
+                    Severity::Nonconforming,
+                    "R8",
                     if lug < stud { "lug-too-small" } else { "lug-too-large" },
-                    self.place(), self.circuit.line,
+                    self.place(),
+                    self.circuit.line,
                     format!("lug for {lug} on the {stud} terminal of \"{name}\""),
-                    None, "use a lug made for that stud and conductor; never drill it out",
+                    None,
+                    "use a lug made for that stud and conductor; never drill it out",
                 ),
                 // A circuit that is designed gets the lug that fits.
                 None if !self.planned.designed() => found.add(
-                    Severity::NotChecked, "R8", "lug-not-stated", self.place(), self.circuit.line,
-                    format!("check not made: lug on the {stud} terminal of \"{name}\""), None, "",
+                    Severity::NotChecked,
+                    "R8",
+                    "lug-not-stated",
+                    self.place(),
+                    self.circuit.line,
+                    format!("check not made: lug on the {stud} terminal of \"{name}\""),
+                    None,
+                    "",
                 ),
                 _ => {}
             }
@@ -338,159 +442,52 @@ impl Place<'_> {
             let heat = amps * amps * each.value;
             if heat > JOINT_W {
                 found.add(
-                    Severity::Advice, "R9", "joint-heat", self.place(), self.circuit.line,
-                    format!("a joint of {} mΩ turns {} W into heat at {} A; no fuse sees that", digits(each.value * 1e3), digits(heat), digits(amps)),
-                    None, "remake the joint, and measure it under load",
-                );
-            }
-        }
-    }
-
-    /// Volts at the load while it starts (R16).
-    fn start(&self, found: &mut Findings) {
-        if let (Some(volts), Some(least)) = (self.planned.flow.start, self.planned.flow.least_voltage)
-            && volts < least
-        {
-            found.add(
-                Severity::Nonconforming, "R16", "start-voltage-too-low", self.place(), self.circuit.line,
-                format!("{} V at the load while it starts, at least {} V", digits(volts), digits(least)),
-                None, "use larger conductors on its path",
-            );
-        }
-    }
-}
-
-/// Busbars and studs (R8).
-fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
-    for board in &site.boards {
-        let place = format!("board \"{}\"", board.name);
-        let mut drawn = 0.0;
-        let mut fed = 0.0;
-        for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-            let Some(planned) = planned else { continue };
-            if circuit.from != board.name && circuit.to != board.name {
-                continue;
-            }
-            let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
-            if towards {
-                fed += planned.fitted.first().map_or_else(
-                    || planned.judgement.current.get::<ampere>(),
-                    |f| f.guard.device.rating.get::<ampere>(),
-                );
-            } else {
-                drawn += planned.judgement.current.get::<ampere>();
-            }
-        }
-        let (need, what) = if fed >= drawn { (fed, "the devices that feed it") } else { (drawn, "its loads") };
-        match board.busbar.map(|b| b.get::<ampere>()) {
-            None => found.add(
-                Severity::NotChecked, "R8", "busbar-rating-not-stated", place.clone(), board.line,
-                "check not made: rated current of the busbar; state busbar".to_string(), None, "",
-            ),
-            Some(rating) if rating < need => found.add(
-                Severity::Danger, "R8", "busbar-below-sum", place.clone(), board.line,
-                format!("busbar rated {} A, but {what} let {} A pass", digits(rating), digits(need)),
-                None, "use a busbar rated for the sum of its sources or loads, whichever is greater",
-            ),
-            Some(_) => {}
-        }
-        if let Some(lugs) = board.lugs_on_stud.filter(|&l| l > LUGS) {
-            found.add(
-                Severity::Nonconforming, "R8", "too-many-lugs", place, board.line,
-                format!("{lugs} lugs on one stud, at most {LUGS}, the heaviest at the base"),
-                None, "spread them over more studs or a busbar",
-            );
-        }
-    }
-}
-
-/// Supply range of loads and inverters against the highest voltage (R3).
-fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
-    for tree in &plan.trees {
-        for node in &tree.nodes {
-            let Some(Some(planned)) = node.circuit.and_then(|c| plan.circuits.get(c)) else { continue };
-            let (place, line, least, greatest) = match node.item {
-                Item::Load(i) => match site.loads.get(i) {
-                    Some(l) => (format!("load \"{}\"", l.name), l.line, l.least, l.greatest),
-                    None => continue,
-                },
-                Item::Inverter(i) => match site.inverters.get(i) {
-                    Some(v) => (format!("inverter \"{}\"", v.name), v.line, v.least, v.greatest),
-                    None => continue,
-                },
-                Item::Bank(_) | Item::Board(_) => continue,
-            };
-            let highest = planned.flow.highest;
-            match greatest.map(|g| g.get::<volt>()) {
-                Some(greatest) if greatest < highest => found.add(
-                    Severity::Nonconforming, "R3", "voltage-too-high-at-load", place.clone(), line,
-                    format!("bears {} V, but the bank reaches {} V while it is charged cold", digits(greatest), digits(highest)),
-                    None, "use a load for the full range, a converter, or disconnect it while equalising",
-                ),
-                Some(_) => {}
-                None => found.add(
-                    Severity::NotChecked, "R3", "greatest-voltage-not-stated", place.clone(), line,
-                    format!("check not made: greatest supply voltage against {} V; state greatest", digits(highest)), None, "",
-                ),
-            }
-            if least.is_none() {
-                found.add(
-                    Severity::NotChecked, "R3", "least-voltage-not-stated", place, line,
+                    Severity::Advice,
+                    "R9",
+                    "joint-heat",
+                    self.place(),
+                    self.circuit.line,
                     format!(
-                        "check not made: least supply voltage against {} V at cut-off; state least",
-                        digits(planned.judgement.end_voltage.get::<volt>())
+                        "a joint of {} mΩ turns {} W into heat at {} A; no fuse sees that",
+                        digits(each.value * 1e3),
+                        digits(heat),
+                        digits(amps)
                     ),
-                    None, "",
+                    None,
+                    "remake the joint, and measure it under load",
                 );
             }
         }
     }
-}
 
-/// Banks: discharge limit, touch voltage, what is known of the fault current.
-fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
-    for (index, bank) in site.banks.iter().enumerate() {
-        let place = format!("bank \"{}\"", bank.name);
-        let drawn: f64 = site
-            .circuits
-            .iter()
-            .zip(&plan.circuits)
-            .filter(|(c, _)| c.from == bank.name || c.to == bank.name)
-            .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
-            .sum();
-        if let Some(limit) = bank.greatest_discharge.map(|a| a.get::<ampere>())
-            && drawn > limit
-        {
+    /// An inverter's feed that would do for its power over nominal voltage, but not in the worst hour (R3).
+    fn sized_at_nominal(&self, found: &mut Findings) {
+        use crate::rules::Check::{Ampacity, DeviceCarries, TerminalColumn};
+        let Some(Item::Inverter(index)) = self.child else { return };
+        let Some(inverter) = self.site.inverters.get(index) else { return };
+        let sized = |judged: &Judgement| {
+            !judged.checks.iter().any(|c| {
+                c.outcome == Outcome::Failed && matches!(c.check, Ampacity | DeviceCarries | TerminalColumn)
+            })
+        };
+        let Planned { run, positive, negative, fitted, judgement, .. } = self.planned;
+        let nominal = inverter.power / run.nominal;
+        if sized(judgement) || self.planned.designed() {
+            return;
+        }
+        let demand = Demand::Current { continuous: nominal, other: ElectricCurrent::default() };
+        let at_nominal = judge(&Run { demand, ..*run }, positive, negative, fitted.first().map(|f| &f.guard));
+        if at_nominal.is_ok_and(|j| sized(&j)) {
             found.add(
-                Severity::Nonconforming, "R11", "discharge-above-limit", place.clone(), bank.line,
-                format!("{} A in the worst hour, at most {} A", digits(drawn), digits(limit)),
-                None, "less load at a time, a larger bank or another pack",
+                Severity::Danger, "R3", "feed-sized-at-nominal", self.place(), self.circuit.line,
+                format!(
+                    "conductor and device suit {} A, power over nominal voltage; at cut-off, with its efficiency, the inverter draws {} A",
+                    digits(nominal.get::<ampere>()),
+                    digits(judgement.current.get::<ampere>())
+                ),
+                None, "size the feed for the lowest voltage at the inverter's terminals",
             );
         }
-        let highest = bank.highest.get::<volt>();
-        if highest > TOUCH_V {
-            found.add(
-                Severity::NotChecked, "R19", "touch-protection", place.clone(), bank.line,
-                format!("the bank reaches {} V, above {} V: protection against touch is not described in the document", digits(highest), digits(TOUCH_V)),
-                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", crate::citation::Seen::Page)),
-                "cover live parts and mark them",
-            );
-        }
-        let known = super::plan::sources(site);
-        if known.get(index).is_some_and(|e| e.by_thumb) {
-            found.add(
-                Severity::Advice, "R6", "fault-current-by-rule-of-thumb", place, bank.line,
-                "prospective currents rest on a rule of thumb from capacity: known to a factor at best".to_string(),
-                None, "state short_circuit or internal_resistance from the maker's sheet or a measurement",
-            );
-        }
-    }
-    if site.earthing == Earthing::Floating {
-        found.add(
-            Severity::Advice, "R19", "floating-system", "site", 0,
-            "neither pole is earthed: a first earth fault shows nowhere".to_string(),
-            None, "fit insulation monitoring",
-        );
     }
 }
 

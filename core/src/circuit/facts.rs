@@ -1,0 +1,411 @@
+//! The single checks of a run (R3 to R6, R17, R18): each compares one value with one limit and names both sources.
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::ratio::ratio;
+use uom::si::thermodynamic_temperature::degree_celsius;
+
+use super::checked::{Checked, Outcome};
+use super::run::Run;
+use crate::cable::{Conductor, adiabatic_k};
+use crate::citation::{Citation, Seen};
+use crate::device::{Polarity, Supply};
+use crate::error::Error;
+use crate::protection::{Guard, least_rating};
+use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
+use crate::rules::{Ampacity, Check, Key};
+
+/// Where a rule comes from that is this library's own (`R` numbers of its design).
+const fn own(place: &'static str) -> Citation {
+    Citation::new("design rule", place, Seen::Derived)
+}
+
+/// Upper conventional current of an overload device over the conductor's: the general rule behind R5.
+const OVERLOAD: Citation = Citation::new("IEC 60364-4-43:2008", "433.1", Seen::Page);
+/// A device that protects against overload and breaks the fault also protects against short-circuit.
+const BREAKS_AND_PROTECTS: Citation = Citation::new("IEC 60364-4-43:2008", "435.1", Seen::Recalled);
+const ADIABATIC: Citation = Citation::new("IEC 60364-4-43:2008", "434.5.2, Table 43A", Seen::Page);
+/// Longest opening time of an instantaneous trip, s.
+const INSTANTANEOUS_S: f64 = 0.1;
+const INSTANTANEOUS: Citation =
+    Citation::new("IEC 60898-1", "instantaneous tripping below 0.1 s", Seen::Recalled);
+
+/// What the checks of one run share.
+pub(super) struct Facts<'a> {
+    pub run: &'a Run,
+    pub thinner: &'a Conductor,
+    pub guard: Option<&'a Guard>,
+    pub ampacity: &'a Result<Ampacity, Error>,
+    pub current: ElectricCurrent,
+    pub continuous: ElectricCurrent,
+}
+
+impl Facts<'_> {
+    pub fn admitted(&self, conductor: &Conductor) -> Option<Checked> {
+        match self.run.rules.admits(conductor, self.run.moving) {
+            Ok(()) => None,
+            Err(Error::Refused { why, rule, .. }) => {
+                Some(Checked::plain(Check::Conductor, Outcome::Failed, why, rule))
+            }
+            Err(_) => Some(Checked::plain(
+                Check::Conductor,
+                Outcome::NotChecked,
+                "conductor material and class",
+                own("R18"),
+            )),
+        }
+    }
+
+    pub fn least_size(&self) -> Checked {
+        let least = self.run.rules.least_size();
+        Checked::at_least(
+            Check::LeastSize,
+            self.thinner.size.area_mm2(),
+            least.value.area_mm2(),
+            "mm²",
+            "mechanical minimum of the conductor",
+            least.citation,
+        )
+    }
+
+    /// (a) of R4, `us` only: the terminal's column, before derating.
+    pub fn terminal_column(&self) -> Option<Checked> {
+        let factor = self.run.rules.continuous_factor();
+        let need = factor.value * self.continuous + (self.current - self.continuous);
+        let marked = self.run.terminal.map(|t| t.get::<degree_celsius>());
+        let marked = match (marked, self.guard) {
+            // A mark counts only where the device carries one too.
+            (Some(terminal), Some(guard)) => guard.terminal_degC.map(|device| device.min(terminal)),
+            (terminal, None) => terminal,
+            (None, Some(_)) => None,
+        };
+        // Insulation below the terminal's column counts instead of it.
+        let insulation = self.thinner.insulation.rating_degC();
+        let marked =
+            if insulation < 75.0 { Some(marked.map_or(insulation, |m| m.min(insulation))) } else { marked };
+        match self.run.rules.terminal_column(self.thinner.size, need, marked) {
+            Ok(None) => None,
+            Ok(Some((cell, column))) => Some(Checked::at_most(
+                Check::TerminalColumn,
+                need.get::<ampere>(),
+                cell.value,
+                "A",
+                match column {
+                    "60 °C" => "1.25 × continuous + rest, 60 °C column of the terminal",
+                    "75 °C" => "1.25 × continuous + rest, 75 °C column of the terminal",
+                    _ => "1.25 × continuous + rest, terminal's column",
+                },
+                cell.citation,
+            )),
+            Err(error) => Some(not_tabulated(Check::TerminalColumn, "terminal's column", error)),
+        }
+    }
+
+    /// (b) of R4.
+    pub fn ampacity(&self) -> Checked {
+        match self.ampacity {
+            Ok(ampacity) => Checked::at_most(
+                Check::Ampacity,
+                self.current.get::<ampere>(),
+                ampacity.corrected.get::<ampere>(),
+                "A",
+                match self.run.rules.set().key {
+                    Key::Iec => "design current Ib against Iz after all factors",
+                    _ => "design current against ampacity after all factors",
+                },
+                worst_citation(ampacity),
+            ),
+            Err(error) => not_tabulated(Check::Ampacity, "current against the conductor's table", *error),
+        }
+    }
+
+    pub fn device_carries(&self) -> Option<Checked> {
+        let device = self.guard?.device;
+        let factor = self.run.rules.continuous_factor();
+        let carries = Ratio::new::<ratio>(device.family.data().continuous_ratio);
+        let other = self.current - self.continuous;
+        let need = least_rating(self.continuous, other, carries, device.full_rated, factor.value);
+        Some(Checked::at_least(
+            Check::DeviceCarries,
+            device.rating.get::<ampere>(),
+            need.get::<ampere>(),
+            "A",
+            "rating of the device against the current it carries for hours",
+            if factor.value > 1.0 { factor.citation } else { own("R5") },
+        ))
+    }
+
+    /// (c) of R4.
+    pub fn device_protects(&self) -> Option<Checked> {
+        let device = self.guard?.device;
+        if !device.family.data().overload {
+            return Some(Checked::plain(
+                Check::DeviceProtects,
+                Outcome::Failed,
+                "the family opens on short-circuit only; add an overload device",
+                device.family.data().source,
+            ));
+        }
+        Some(match self.ampacity {
+            Ok(ampacity) => {
+                let limit = self.run.rules.device_limit(self.thinner.size, ampacity.corrected);
+                let mut citation = limit.citation;
+                if worst_citation(ampacity).seen == Seen::Recalled {
+                    citation = citation.recalled();
+                }
+                Checked::at_most(
+                    Check::DeviceProtects,
+                    device.rating.get::<ampere>(),
+                    limit.most.get::<ampere>(),
+                    "A",
+                    limit.rule,
+                    citation,
+                )
+            }
+            Err(error) => {
+                not_tabulated(Check::DeviceProtects, "device against the conductor's table", *error)
+            }
+        })
+    }
+
+    /// R5: families whose upper conventional current lies above 1.45 × rating; under `iec` every family.
+    pub fn opens_late(&self) -> Option<Checked> {
+        let device = self.guard?.device;
+        if !device.family.data().overload {
+            return None;
+        }
+        let what =
+            "current at which the device has opened within its conventional time, against 1.45 × ampacity";
+        let Some(times) = device.family.operating_ratio(device.rating) else {
+            return Some(Checked::plain(
+                Check::OpensLate,
+                Outcome::NotChecked,
+                what,
+                device.family.data().source,
+            ));
+        };
+        let limit = self.run.rules.overload_ratio();
+        if self.run.rules.set().key != Key::Iec && times <= limit.value {
+            return None;
+        }
+        let ampacity = self.ampacity.as_ref().ok()?;
+        Some(Checked::at_most(
+            Check::OpensLate,
+            times * device.rating.get::<ampere>(),
+            limit.value * ampacity.corrected.get::<ampere>(),
+            "A",
+            what,
+            OVERLOAD,
+        ))
+    }
+
+    pub fn drop(&self, path_drop: Ratio) -> Checked {
+        let (limit, citation) = match self.run.drop {
+            Some(stated) => (stated, Citation::new("the site file", "drop", Seen::Stated)),
+            None => {
+                let limit = self.run.rules.drop_limit(self.run.usage);
+                (limit.ratio, limit.citation)
+            }
+        };
+        Checked::at_most(
+            Check::Drop,
+            path_drop.get::<ratio>() * 100.0,
+            limit.get::<ratio>() * 100.0,
+            "%",
+            "voltage drop from the source, per cent of nominal",
+            citation,
+        )
+    }
+
+    pub fn load_voltage(&self, end_voltage: ElectricPotential) -> Option<Checked> {
+        let least = self.run.least_voltage?;
+        Some(Checked::at_least(
+            Check::LoadVoltage,
+            end_voltage.get::<volt>(),
+            least.get::<volt>(),
+            "V",
+            "voltage at the far end with the source at cut-off",
+            Citation::new("the site file", "least", Seen::Stated),
+        ))
+    }
+
+    pub fn start_voltage(&self, end: ElectricPotential, own: ElectricalResistance) -> Option<Checked> {
+        let (extra, least) = self.run.start.zip(self.run.least_voltage)?;
+        let dip: ElectricPotential = extra * (self.run.resistance_before + own);
+        Some(Checked::at_least(
+            Check::StartVoltage,
+            (end - dip).get::<volt>(),
+            least.get::<volt>(),
+            "V",
+            "voltage at the far end while it starts, with the source at cut-off",
+            Citation::new("the site file", "least", Seen::Stated),
+        ))
+    }
+
+    pub fn breaking(&self) -> Option<Checked> {
+        let device = self.guard?.device;
+        let what = "breaking capacity against the greatest prospective current";
+        Some(match (device.breaking, self.run.greatest_fault) {
+            (Some(breaking), Some(fault)) => Checked::at_least(
+                Check::Breaking,
+                breaking.get::<ampere>() / 1000.0,
+                fault.get::<ampere>() / 1000.0,
+                "kA",
+                what,
+                own("R6"),
+            ),
+            (None, _) => Checked::plain(
+                Check::Breaking,
+                Outcome::NotChecked,
+                "breaking capacity on DC is not stated",
+                own("R6"),
+            ),
+            (_, None) => Checked::plain(
+                Check::Breaking,
+                Outcome::NotChecked,
+                "greatest prospective current is not known; state the bank's short_circuit or internal_resistance",
+                own("R6"),
+            ),
+        })
+    }
+
+    /// R6: the least prospective current must operate the device before the conductor's limit.
+    pub fn least_fault(&self, least: Option<ElectricCurrent>) -> Option<Checked> {
+        let device = self.guard?.device;
+        let Some(least) = least else {
+            return Some(Checked::plain(
+                Check::LeastFault,
+                Outcome::NotChecked,
+                "least prospective current is not known; state the bank's internal_resistance",
+                own("R6"),
+            ));
+        };
+        let Some(times) = device.family.operating_ratio(device.rating) else {
+            return Some(Checked::plain(
+                Check::LeastFault,
+                Outcome::NotChecked,
+                "no current is held at which this family surely opens",
+                own("R6"),
+            ));
+        };
+        Some(Checked::at_least(
+            Check::LeastFault,
+            least.get::<ampere>(),
+            times * device.rating.get::<ampere>(),
+            "A",
+            "least prospective current at the far end against the current that surely opens the device",
+            own("R6"),
+        ))
+    }
+
+    /// The conductor's withstand of the greatest fault until the device opens.
+    pub fn withstand(&self) -> Option<Checked> {
+        let guard = self.guard?;
+        let device = guard.device;
+        let data = device.family.data();
+        let what = "let-through energy I²t against the conductor's k²S²";
+        let missing = |what| Some(Checked::plain(Check::Withstand, Outcome::NotChecked, what, ADIABATIC));
+        let Some(fault) = self.run.greatest_fault else {
+            return missing("withstand of the conductor: the greatest prospective current is not known");
+        };
+        let area = self.thinner.size.area_mm2();
+        let Ok(k) = adiabatic_k(self.thinner.material, self.thinner.insulation, self.thinner.size) else {
+            return missing("withstand of the conductor: no k of its material is held");
+        };
+        let bearable = k.value * k.value * area * area;
+        let amps = fault.get::<ampere>();
+        if let Some(stated) = guard.let_through_A2s {
+            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, ADIABATIC));
+        }
+        if let Some(times) = device.family.instantaneous_ratio()
+            && amps >= times * device.rating.get::<ampere>()
+        {
+            let energy = amps * amps * INSTANTANEOUS_S;
+            return Some(Checked::at_most(Check::Withstand, energy, bearable, "A²s", what, INSTANTANEOUS));
+        }
+        // A fuse that guards against overload and breaks the fault guards against short-circuit too.
+        let guards = self.device_protects().is_some_and(|c| c.outcome == Outcome::Passed)
+            && self.opens_late().is_none_or(|c| c.outcome == Outcome::Passed)
+            && device.breaking.is_some_and(|b| b >= fault);
+        if data.is_fuse && data.overload && guards {
+            return Some(Checked::plain(
+                Check::Withstand,
+                Outcome::Passed,
+                "the fuse guards against overload and breaks the fault, so the conductor withstands it",
+                BREAKS_AND_PROTECTS,
+            ));
+        }
+        missing("withstand of the conductor: state let_through (I²t) of the device")
+    }
+
+    pub fn supply(&self) -> Option<Checked> {
+        let device = self.guard?.device;
+        let what = "voltage rating on DC against the highest voltage of the system";
+        Some(match device.supply {
+            Supply::AcOnly => Checked::plain(
+                Check::DeviceSupply,
+                Outcome::Failed,
+                "the device is rated for AC only; on DC its arc need not go out: use one rated for DC",
+                own("R6"),
+            ),
+            Supply::NotStated => Checked::plain(
+                Check::DeviceSupply,
+                Outcome::NotChecked,
+                "voltage rating on DC is not stated",
+                own("R6"),
+            ),
+            Supply::Dc(rated) => Checked::at_least(
+                Check::DeviceSupply,
+                rated.get::<volt>(),
+                self.run.highest.get::<volt>(),
+                "V",
+                if device.polarity == Polarity::Marked {
+                    "voltage rating on DC (polarity marked: connect + to the source)"
+                } else {
+                    what
+                },
+                own("R6"),
+            ),
+        })
+    }
+
+    pub fn termination(&self) -> Option<Checked> {
+        let (least, most) = self.guard?.terminal_range?;
+        let area = self.thinner.size.area_mm2();
+        let stated = Citation::new("the site file", "terminal_range", Seen::Stated);
+        Some(if area < least.area_mm2() {
+            Checked::at_least(
+                Check::Termination,
+                area,
+                least.area_mm2(),
+                "mm²",
+                "least conductor of the device's terminal",
+                stated,
+            )
+        } else {
+            Checked::at_most(
+                Check::Termination,
+                area,
+                most.area_mm2(),
+                "mm²",
+                "greatest conductor of the device's terminal",
+                stated,
+            )
+        })
+    }
+}
+
+/// A recalled cell or factor marks the whole result.
+fn worst_citation(ampacity: &Ampacity) -> Citation {
+    let recalled = ampacity.factors.iter().any(|f| f.citation.seen == Seen::Recalled);
+    if recalled { ampacity.base.citation.recalled() } else { ampacity.base.citation }
+}
+
+/// A table without an answer is a check not made.
+fn not_tabulated(check: Check, what: &'static str, error: Error) -> Checked {
+    let citation = match error {
+        Error::TableEnds { table, .. } | Error::NotTabulated { table, .. } => table,
+        _ => own("R4"),
+    };
+    Checked::plain(check, Outcome::NotChecked, what, citation)
+}

@@ -1,0 +1,245 @@
+//! What can be had for a site: from its stock, else standard sizes and plain generic parts.
+
+use alloc::format;
+use alloc::string::ToString;
+use alloc::vec::Vec;
+
+use uom::si::electric_current::ampere;
+use uom::si::electrical_resistance::ohm;
+use uom::si::ratio::ratio;
+use uom::si::thermodynamic_temperature::degree_celsius;
+
+use super::model::{CircuitEntry, DeviceEntry, Site};
+use super::plan::{Draft, Fitted};
+use super::read::Problem;
+use crate::cable::{
+    Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance,
+};
+use crate::circuit::{Judgement, Outcome, Run, judge};
+use crate::device::{Device, Family, Polarity, Supply};
+use crate::protection::{Guard, Offer, choose, least_rating};
+use crate::quantity::{ConductorSize, ElectricCurrent, ElectricalResistance, Ratio};
+
+/// A stated device, if family and rating are stated.
+pub(super) fn complete(stated: &DeviceEntry) -> Option<Guard> {
+    let (family, rating) = stated.family.zip(stated.rating)?;
+    Some(Guard {
+        device: Device {
+            family,
+            rating,
+            supply: stated.supply,
+            breaking: stated.breaking,
+            polarity: stated.polarity,
+            full_rated: stated.full_rated,
+        },
+        let_through_A2s: stated.let_through_A2s,
+        terminal_range: stated.terminal_range,
+        terminal_degC: stated.terminal.map(|t| t.get::<degree_celsius>()),
+    })
+}
+
+/// What can be had: from the stock, else standard sizes and plain generic parts.
+pub(super) struct Offers {
+    /// Conductors, smallest first.
+    pub sizes: Vec<Conductor>,
+    devices: Vec<OwnedOffer>,
+    generic_devices: bool,
+}
+
+struct OwnedOffer {
+    family: Family,
+    ratings_A: Vec<f64>,
+    supply: Supply,
+    breaking: Option<ElectricCurrent>,
+    polarity: Polarity,
+    full_rated: bool,
+    let_through_A2s: Option<f64>,
+    terminal_range: Option<(ConductorSize, ConductorSize)>,
+    terminal_degC: Option<f64>,
+}
+
+impl Offers {
+    pub fn new(site: &Site) -> Self {
+        let mut sizes: Vec<Conductor> = site
+            .stock
+            .cables
+            .iter()
+            .map(|c| Conductor {
+                size: c.size,
+                material: c.material,
+                class: c.class,
+                coating: c.coating,
+                insulation: c.insulation,
+            })
+            .collect();
+        if sizes.is_empty() {
+            sizes = site
+                .rules
+                .sizes()
+                .iter()
+                .map(|&size| Conductor {
+                    size,
+                    material: Material::Copper,
+                    class: Class::Flexible,
+                    coating: Coating::Plain,
+                    insulation: site.rules.usual_insulation(),
+                })
+                .collect();
+        }
+        sizes.sort_by(|a, b| a.size.area_mm2().total_cmp(&b.size.area_mm2()));
+        let mut devices: Vec<OwnedOffer> = site
+            .stock
+            .devices
+            .iter()
+            .map(|d| {
+                let mut ratings: Vec<f64> = d.ratings.iter().map(|r| r.get::<ampere>()).collect();
+                ratings.sort_by(f64::total_cmp);
+                OwnedOffer {
+                    family: d.family,
+                    ratings_A: ratings,
+                    supply: d.supply,
+                    breaking: d.breaking,
+                    polarity: d.polarity,
+                    full_rated: d.full_rated,
+                    let_through_A2s: d.let_through_A2s,
+                    terminal_range: d.terminal_range,
+                    terminal_degC: d.terminal.map(|t| t.get::<degree_celsius>()),
+                }
+            })
+            .collect();
+        let generic_devices = devices.is_empty();
+        if generic_devices {
+            devices = site
+                .rules
+                .usual_families()
+                .iter()
+                .map(|&family| OwnedOffer {
+                    family,
+                    ratings_A: Vec::new(),
+                    supply: Supply::NotStated,
+                    breaking: None,
+                    polarity: Polarity::None,
+                    full_rated: false,
+                    let_through_A2s: None,
+                    terminal_range: None,
+                    terminal_degC: None,
+                })
+                .collect();
+        }
+        Self { sizes, devices, generic_devices }
+    }
+
+    /// A circuit's conductors: as stated, or the smallest on offer.
+    pub fn draft(&self, site: &Site, circuit: &CircuitEntry) -> Result<Draft, Problem> {
+        let insulation = circuit.insulation.unwrap_or_else(|| site.rules.usual_insulation());
+        let stated = |size| Conductor {
+            size,
+            material: circuit.material,
+            class: circuit.class,
+            coating: circuit.coating,
+            insulation,
+        };
+        let (positive, negative, offered) = match circuit.size {
+            Some(size) => (stated(size), stated(circuit.negative_size.unwrap_or(size)), None),
+            None => {
+                let Some(first) = self.sizes.first() else {
+                    return Err(Problem {
+                        line: circuit.line,
+                        place: format!("[[circuit]] \"{}\"", circuit.name),
+                        text: "no conductor is on offer; add [[stock.cable]] or state size".to_string(),
+                    });
+                };
+                (*first, *first, Some(0))
+            }
+        };
+        Ok(Draft { positive, negative, offered, refused: Vec::new(), joints: joints(circuit, &[]) })
+    }
+
+    /// The device that suits a run: the first offer, in the order of the stock, whose smallest sufficient rating
+    /// fails no check; else the one that fails fewest.
+    pub fn best(
+        &self,
+        run: &Run,
+        draft: &Draft,
+        bare: &Judgement,
+        stated: Option<&DeviceEntry>,
+    ) -> Option<Guard> {
+        let mut fallback: Option<(usize, Guard)> = None;
+        for owned in &self.devices {
+            let family = stated.and_then(|s| s.family).unwrap_or(owned.family);
+            let fixed = stated.and_then(|s| s.rating).map(|r| [r.get::<ampere>()]);
+            let fixed = fixed.as_ref().map(<[f64; 1]>::as_slice);
+            let mut offer = Offer {
+                family,
+                ratings_A: fixed.unwrap_or(if family == owned.family { &owned.ratings_A } else { &[] }),
+                supply: owned.supply,
+                breaking: owned.breaking,
+                polarity: owned.polarity,
+                full_rated: owned.full_rated,
+                let_through_A2s: owned.let_through_A2s,
+                terminal_range: owned.terminal_range,
+                terminal_degC: owned.terminal_degC,
+            };
+            if self.generic_devices {
+                // A part to be bought is bought for its place: the requirement becomes the specification.
+                offer.supply = Supply::Dc(run.highest);
+                offer.breaking = run.greatest_fault;
+            }
+            if let Some(stated) = stated {
+                offer.supply = if stated.supply == Supply::NotStated { offer.supply } else { stated.supply };
+                offer.breaking = stated.breaking.or(offer.breaking);
+                offer.terminal_range = stated.terminal_range.or(offer.terminal_range);
+                offer.full_rated |= stated.full_rated;
+            }
+            let carries = Ratio::new::<ratio>(family.data().continuous_ratio);
+            let factor = run.rules.continuous_factor().value;
+            let need = least_rating(
+                bare.continuous,
+                bare.current - bare.continuous,
+                carries,
+                offer.full_rated,
+                factor,
+            );
+            let Ok(guard) =
+                choose(&offer, |_| if fixed.is_some() { ElectricCurrent::default() } else { need })
+            else {
+                continue;
+            };
+            let Ok(judged) = judge(run, &draft.positive, &draft.negative, Some(&guard)) else { continue };
+            let failures = judged.checks.iter().filter(|c| c.outcome == Outcome::Failed).count();
+            if failures == 0 {
+                return Some(guard);
+            }
+            if fallback.is_none_or(|(fewest, _)| failures < fewest) {
+                fallback = Some((failures, guard));
+            }
+        }
+        fallback.map(|(_, guard)| guard)
+    }
+}
+
+/// All joints of a circuit: stated ones, else a lug at each of four conductor ends; its parts; its devices as fitted.
+pub(super) fn joints(circuit: &CircuitEntry, fitted: &[Fitted]) -> ElectricalResistance {
+    let mut sum = ElectricalResistance::new::<ohm>(0.0);
+    if circuit.joints.is_empty() {
+        sum += 4.0 * joint_resistance(JointKind::Lug);
+    }
+    for joint in &circuit.joints {
+        sum += f64::from(joint.count) * joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind));
+    }
+    for part in &circuit.parts {
+        sum += part.resistance.unwrap_or_else(|| rated(part.kind.joint(), part.rating));
+    }
+    for device in fitted.iter().map(|f| f.guard.device) {
+        let kind = if device.family.data().is_fuse { JointKind::Fuse } else { JointKind::Breaker };
+        sum += rated(kind, Some(device.rating));
+    }
+    sum
+}
+
+/// Generic resistance of a part, by its rating where that is known.
+fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
+    rating
+        .and_then(|rating| rated_joint_resistance(kind, rating).ok())
+        .unwrap_or_else(|| joint_resistance(kind))
+}

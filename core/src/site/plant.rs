@@ -1,0 +1,210 @@
+//! What boards, consumers and banks are inspected for (R3, R8, R11, R19).
+
+use alloc::format;
+use alloc::string::ToString;
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+
+use super::finding::{Severity, digits};
+use super::graph::Item;
+use super::model::Site;
+use super::plan::{Plan, sources};
+use super::wiring::Findings;
+use crate::citation::{Citation, Seen};
+use crate::protection::Earthing;
+
+/// Highest voltage that may be touched without basic protection in dry places, V.
+const TOUCH_V: f64 = 60.0;
+/// Most lugs on one stud (R8).
+const LUGS: u32 = 4;
+
+/// Busbars and studs (R8).
+pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
+    for board in &site.boards {
+        let place = format!("board \"{}\"", board.name);
+        let mut drawn = 0.0;
+        let mut fed = 0.0;
+        for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+            let Some(planned) = planned else { continue };
+            if circuit.from != board.name && circuit.to != board.name {
+                continue;
+            }
+            let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
+            if towards {
+                fed += planned.fitted.first().map_or_else(
+                    || planned.judgement.current.get::<ampere>(),
+                    |f| f.guard.device.rating.get::<ampere>(),
+                );
+            } else {
+                drawn += planned.judgement.current.get::<ampere>();
+            }
+        }
+        let (need, what) =
+            if fed >= drawn { (fed, "the devices that feed it") } else { (drawn, "its loads") };
+        match board.busbar.map(|b| b.get::<ampere>()) {
+            None => found.add(
+                Severity::NotChecked,
+                "R8",
+                "busbar-rating-not-stated",
+                place.clone(),
+                board.line,
+                "check not made: rated current of the busbar; state busbar".to_string(),
+                None,
+                "",
+            ),
+            Some(rating) if rating < need => found.add(
+                Severity::Danger,
+                "R8",
+                "busbar-below-sum",
+                place.clone(),
+                board.line,
+                format!("busbar rated {} A, but {what} let {} A pass", digits(rating), digits(need)),
+                None,
+                "use a busbar rated for the sum of its sources or loads, whichever is greater",
+            ),
+            Some(_) => {}
+        }
+        if let Some(lugs) = board.lugs_on_stud.filter(|&l| l > LUGS) {
+            found.add(
+                Severity::Nonconforming,
+                "R8",
+                "too-many-lugs",
+                place,
+                board.line,
+                format!("{lugs} lugs on one stud, at most {LUGS}, the heaviest at the base"),
+                None,
+                "spread them over more studs or a busbar",
+            );
+        }
+    }
+}
+
+/// Supply range of loads and inverters against the highest voltage (R3).
+pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
+    for tree in &plan.trees {
+        for node in &tree.nodes {
+            let Some(Some(planned)) = node.circuit.and_then(|c| plan.circuits.get(c)) else { continue };
+            let (place, line, least, greatest) = match node.item {
+                Item::Load(i) => match site.loads.get(i) {
+                    Some(l) => (format!("load \"{}\"", l.name), l.line, l.least, l.greatest),
+                    None => continue,
+                },
+                Item::Inverter(i) => match site.inverters.get(i) {
+                    Some(v) => (format!("inverter \"{}\"", v.name), v.line, v.least, v.greatest),
+                    None => continue,
+                },
+                Item::Bank(_) | Item::Board(_) => continue,
+            };
+            let highest = planned.flow.highest;
+            match greatest.map(|g| g.get::<volt>()) {
+                Some(greatest) if greatest < highest => found.add(
+                    Severity::Nonconforming,
+                    "R3",
+                    "voltage-too-high-at-load",
+                    place.clone(),
+                    line,
+                    format!(
+                        "bears {} V, but the bank reaches {} V while it is charged cold",
+                        digits(greatest),
+                        digits(highest)
+                    ),
+                    None,
+                    "use a load for the full range, a converter, or disconnect it while equalising",
+                ),
+                Some(_) => {}
+                None => found.add(
+                    Severity::NotChecked,
+                    "R3",
+                    "greatest-voltage-not-stated",
+                    place.clone(),
+                    line,
+                    format!(
+                        "check not made: greatest supply voltage against {} V; state greatest",
+                        digits(highest)
+                    ),
+                    None,
+                    "",
+                ),
+            }
+            if least.is_none() {
+                found.add(
+                    Severity::NotChecked,
+                    "R3",
+                    "least-voltage-not-stated",
+                    place,
+                    line,
+                    format!(
+                        "check not made: least supply voltage against {} V at cut-off; state least",
+                        digits(planned.judgement.end_voltage.get::<volt>())
+                    ),
+                    None,
+                    "",
+                );
+            }
+        }
+    }
+}
+
+/// Banks: discharge limit, touch voltage, what is known of the fault current.
+pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
+    for (index, bank) in site.banks.iter().enumerate() {
+        let place = format!("bank \"{}\"", bank.name);
+        let drawn: f64 = site
+            .circuits
+            .iter()
+            .zip(&plan.circuits)
+            .filter(|(c, _)| c.from == bank.name || c.to == bank.name)
+            .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
+            .sum();
+        if let Some(limit) = bank.greatest_discharge.map(|a| a.get::<ampere>())
+            && drawn > limit
+        {
+            found.add(
+                Severity::Nonconforming,
+                "R11",
+                "discharge-above-limit",
+                place.clone(),
+                bank.line,
+                format!("{} A in the worst hour, at most {} A", digits(drawn), digits(limit)),
+                None,
+                "less load at a time, a larger bank or another pack",
+            );
+        }
+        let highest = bank.highest.get::<volt>();
+        if highest > TOUCH_V {
+            found.add(
+                Severity::NotChecked, "R19", "touch-protection", place.clone(), bank.line,
+                format!("the bank reaches {} V, above {} V: protection against touch is not described in the document", digits(highest), digits(TOUCH_V)),
+                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)),
+                "cover live parts and mark them",
+            );
+        }
+        let known = sources(site);
+        if known.get(index).is_some_and(|e| e.by_thumb) {
+            found.add(
+                Severity::Advice,
+                "R6",
+                "fault-current-by-rule-of-thumb",
+                place,
+                bank.line,
+                "prospective currents rest on a rule of thumb from capacity: known to a factor at best"
+                    .to_string(),
+                None,
+                "state short_circuit or internal_resistance from the maker's sheet or a measurement",
+            );
+        }
+    }
+    if site.earthing == Earthing::Floating {
+        found.add(
+            Severity::Advice,
+            "R19",
+            "floating-system",
+            "site",
+            0,
+            "neither pole is earthed: a first earth fault shows nowhere".to_string(),
+            None,
+            "fit insulation monitoring",
+        );
+    }
+}
