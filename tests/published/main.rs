@@ -1,1 +1,4 @@
 //! Tests: published.
+
+mod law;
+mod practice;
