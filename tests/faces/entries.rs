@@ -158,6 +158,7 @@ fn odd_inputs_give_a_finite_result_or_an_error_and_columns_the_same() {
     }
 }
 
+#[allow(clippy::result_large_err, reason = "as the entry")]
 fn columns(entry: &Entry, rows: &[Vec<f64>]) -> Result<Vec<Vec<f64>>, ampwright::catalogue::AtIndex> {
     let inputs: Vec<Vec<f64>> =
         (0..entry.inputs.len()).map(|place| rows.iter().map(|row| row[place]).collect()).collect();
