@@ -4,3 +4,5 @@ mod devices;
 
 mod ampacity;
 mod protection_rules;
+mod law;
+mod practice;

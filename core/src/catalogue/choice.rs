@@ -1,5 +1,7 @@
 //! Inputs that are one of a few words: faces that know numbers only pass 0, 1, 2 ….
 
+use crate::error::Allowed;
+
 /// An enum that is an input of a calculation.
 pub trait Choice: Copy + 'static {
     /// The variants in the order of their codes; never empty.
@@ -13,4 +15,12 @@ pub trait Choice: Copy + 'static {
     fn of_code(code: f64) -> Option<Self> {
         Self::ALL.iter().enumerate().find(|&(i, _)| i as f64 == code).map(|(_, &variant)| variant)
     }
+}
+
+/// The codes of a number of variants.
+#[allow(dead_code, reason = "for declarations with a choice; the laws have none")]
+pub(crate) const fn codes(variants: usize) -> Allowed {
+    // No list of words is that long.
+    #[allow(clippy::cast_possible_truncation)]
+    Allowed::Code(if variants > 255 { 255 } else { variants as u8 })
 }

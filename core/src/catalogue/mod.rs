@@ -14,6 +14,8 @@ pub(crate) mod unit;
 #[cfg(feature = "std")]
 pub use self::{array::AtIndex, entry::Array};
 pub use choice::Choice;
+#[allow(unused_imports, reason = "as `codes`")]
+pub(crate) use choice::codes;
 pub(crate) use declare::calculations;
 #[doc(hidden)]
 pub use entry::{Calculation, scalar};

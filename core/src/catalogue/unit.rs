@@ -136,7 +136,7 @@ macro_rules! range {
         $crate::error::Allowed::Finite
     };
     ($type:ident choice) => {
-        $crate::error::Allowed::Code(<$type as $crate::catalogue::Choice>::ALL.len() as u8)
+        $crate::catalogue::codes(<$type as $crate::catalogue::Choice>::ALL.len())
     };
     ($type:ident > $least:literal ..= $most:literal) => {
         $crate::error::Allowed::AboveUpTo($least, $most)
@@ -174,10 +174,11 @@ macro_rules! range_text {
     };
 }
 
-/// What a result must fulfil: finite, or what its type is bound to.
+/// What a result must fulfil: finite in the declared unit, so that typed callers and faces agree, or what its type is
+/// bound to.
 macro_rules! result_valid {
     (per_hour $x:expr) => { $crate::quantity::ChargeRate::per_hour($x.get()).is_ok() };
-    ($unit:ident $x:expr) => { $crate::catalogue::unit::base!($unit $x).is_finite() };
+    ($unit:ident $x:expr) => { $crate::catalogue::unit::plain!($unit $x).is_finite() };
 }
 macro_rules! result_range {
     (per_hour) => {
