@@ -127,6 +127,8 @@ fn nec_250_122() {
     let find = |device, metal| rules("us").protective_conductor(line, amperes(device), metal);
     assert_eq!(find(61.0, Material::Copper).unwrap().value, gauge("8"));
     assert_eq!(find(60.0, Material::Aluminium).unwrap().value, gauge("8"));
+    // Never larger than the line conductor.
+    assert_eq!(find(1200.0, Material::Copper).unwrap().value, line);
     assert!(find(4001.0, Material::Copper).is_err());
     assert!(find(f64::NAN, Material::Copper).is_err());
 }

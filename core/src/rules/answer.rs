@@ -179,7 +179,6 @@ impl Rules {
     /// assert!(Rules::named("us")?.unfused_length(false, true).is_none());
     /// # Ok::<(), Box<dyn core::error::Error>>(())
     /// ```
-    // The signature was given: callers have the two facts as flags of a circuit.
     pub fn unfused_length(&self, sheathed: bool, from_battery_post: bool) -> Option<Limit<Length>> {
         if let Some(value) = self.overrides.unfused {
             return Some(Limit { value, citation: STATED });
@@ -313,8 +312,7 @@ impl Rules {
 
     /// Least protective conductor, of the line conductor's metal.
     ///
-    /// By the rating of the device (`us`, never larger than the circuit's own conductors need be) or by the line
-    /// conductor (`iec`: half a size stays unrounded, choose the next standard size).
+    /// By the rating of the device (`us`, never larger than the line conductor) or by the line conductor (`iec`: half a size stays unrounded, choose the next standard size).
     ///
     /// # Errors
     /// [`Error::NotTabulated`] where the set holds no table; [`Error::TableEnds`] beyond it;
@@ -357,7 +355,8 @@ impl Rules {
                         remedy: "state the size of the protective conductor",
                     });
                 };
-                let value = if metal == Material::Copper { *copper } else { *aluminium };
+                let tabled = if metal == Material::Copper { *copper } else { *aluminium };
+                let value = if tabled.area_mm2() > line.area_mm2() { line } else { tabled };
                 Ok(Limit { value, citation: Citation { seen: *seen, ..citation } })
             }
             ProtectiveRule::ByLine(rows, citation) => {

@@ -195,7 +195,7 @@ pub(super) static SET: RuleSet = RuleSet {
     device: DeviceRule {
         small: &[],
         next: NextRating::Within(1.5),
-        rule: "rating not above the ampacity; no standard rating up to 150 % of it",
+        rule: "rating not above the ampacity",
         citation: cite("183.455; ABYC E-11", Seen::Recalled),
     },
     // Not a rule of these books: our R5, applied to every set.

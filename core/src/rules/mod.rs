@@ -1,5 +1,6 @@
 //! Rule sets as data: tables, factors, limits, and the order of checks. No physics.
-
+#![doc = ""]
+#![doc = include_str!("../../guide/rule_sets.md")]
 // Unit suffixes keep the symbol's own case: `_A`, `_degC`.
 #![allow(non_snake_case)]
 

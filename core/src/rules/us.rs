@@ -181,7 +181,7 @@ pub(super) static SET: RuleSet = RuleSet {
         small: SMALL,
         next: NextRating::UpTo(800.0),
         rule: "standard rating not above the ampacity",
-        citation: cite("240.4(B), (C)", Seen::Page),
+        citation: cite("240.4(B), (C)", Seen::Recalled),
     },
     // Not a rule of this book: our R5, applied to every set.
     overload_ratio: Limit {
