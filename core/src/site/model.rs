@@ -6,42 +6,12 @@ use alloc::vec::Vec;
 use crate::battery::Chemistry;
 use crate::cable::{Class, Coating, Insulation, JointKind, Material, Stud};
 use crate::device::{Family, Polarity, Supply};
+pub use crate::protection::{Earthing, End, Pole};
 use crate::quantity::{
     ConductorSize, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power,
     Ratio, ThermodynamicTemperature,
 };
 use crate::rules::{Installation, LoadUse, Rules, Space};
-
-/// Which pole is tied to earth (`earthing`, mandatory: R19).
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Earthing {
-    /// `negative`: the negative pole is earthed at one point.
-    Negative,
-    /// `positive`.
-    Positive,
-    /// `floating`: neither pole is earthed.
-    Floating,
-}
-
-/// A pole of the system.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Pole {
-    /// `positive`.
-    Positive,
-    /// `negative`.
-    Negative,
-    /// `both`.
-    Both,
-}
-
-/// End of a circuit.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum End {
-    /// `from`.
-    From,
-    /// `to`.
-    To,
-}
 
 /// The whole document.
 #[derive(Clone, Debug)]
@@ -315,6 +285,19 @@ pub enum PartKind {
     Connector,
     /// `holder`.
     Holder,
+}
+
+impl PartKind {
+    /// The kind of joint it counts as in the path.
+    pub const fn joint(self) -> JointKind {
+        match self {
+            Self::Switch | Self::Selector => JointKind::Switch,
+            Self::Relay => JointKind::Relay,
+            Self::Shunt => JointKind::Shunt,
+            Self::Connector => JointKind::Connector,
+            Self::Holder => JointKind::Fuse,
+        }
+    }
 }
 
 /// `[[circuit.part]]`.
