@@ -13,6 +13,8 @@ mod stock;
 mod syntax;
 #[cfg(test)]
 mod tests;
+mod values;
+mod ways;
 mod whole;
 
 use alloc::format;

@@ -200,7 +200,7 @@ fn lengths(entry: &mut Entry<'_, '_>) -> Option<(Length, Length)> {
         (false, true, false) => entry.missing(&NEGATIVE_LENGTH),
         (false, false, true) => entry.missing(&POSITIVE_LENGTH),
         (false, false, false) => {
-            if !entry.may_hide_keys() {
+            if !entry.is_excused(&[&ONE_WAY, &POSITIVE_LENGTH, &NEGATIVE_LENGTH]) {
                 entry.missing(&ONE_WAY);
             }
         }
@@ -231,6 +231,13 @@ fn way_back(entry: &mut Entry<'_, '_>) -> Return {
     let resistance = entry.quantity(&RETURN_RESISTANCE);
     let is_chassis = entry.word(&RETURN, RETURN_WORDS).unwrap_or(false);
     if is_chassis {
+        for key in [&NEGATIVE_LENGTH, &NEGATIVE_SIZE] {
+            if entry.has(key) {
+                let sentence = "the way back is the chassis: there is no negative conductor; take this out, and \
+                                state one_way";
+                entry.problem(key, sentence.to_owned());
+            }
+        }
         return Return::Chassis(resistance);
     }
     if resistance.is_some() {
@@ -245,7 +252,7 @@ fn way_back(entry: &mut Entry<'_, '_>) -> Return {
 
 /// `device = "none"`, or the sections of the devices.
 fn devices<'d>(entry: &mut Entry<'d, '_>) -> (bool, Vec<Found<'d>>) {
-    let Some(value) = entry.raw(&DEVICE) else { return (false, Vec::new()) };
+    let Some(value) = entry.value(&DEVICE) else { return (false, Vec::new()) };
     if let DeValue::String(word) = value.get_ref() {
         if word != "none" {
             let sentence = format!(

@@ -9,6 +9,7 @@ use alloc::vec::Vec;
 
 use super::entry::Found;
 use super::log::{Cut, Log, Quoted, nearest};
+use super::ways::{Groups, Way, path};
 
 /// Circuits or loads named in one sentence, at most.
 const MOST_NAMED: usize = 8;
@@ -95,9 +96,6 @@ fn text_of<'d>(found: Found<'d>, key: &str) -> Option<(&'d str, usize)> {
     let value = found.table.get(key)?;
     value.get_ref().as_str().map(|text| (text, value.span().start))
 }
-
-/// A way from one node to another: the circuit's number and the node at its other end.
-type Way = (usize, usize);
 
 /// All nodes and circuits of a document.
 pub(super) struct Plan<'d> {
@@ -290,8 +288,11 @@ impl<'d> Plan<'d> {
         if more > 0 {
             names.push(format!("{more} more"));
         }
-        let with =
-            if names.is_empty() { String::new() } else { format!(" with circuit {}", names.join(", ")) };
+        let with = match names.len() {
+            0 => String::new(),
+            1 => format!(" with circuit {}", names.concat()),
+            _ => format!(" with circuits {}", names.join(", ")),
+        };
         format!(
             "it closes a loop{with}: there are two ways to {} {}; take one circuit of the loop out",
             node.kind.word(),
@@ -356,66 +357,5 @@ impl<'d> Plan<'d> {
             }
         }
         None
-    }
-}
-
-/// The circuits of the way from one node to another, breadth first.
-fn path(ways: &[Vec<Way>], from: usize, to: usize) -> Vec<usize> {
-    let mut came: Vec<Option<Way>> = vec![None; ways.len()];
-    let mut queue = VecDeque::from([from]);
-    while let Some(index) = queue.pop_front() {
-        if index == to {
-            break;
-        }
-        for &(number, other) in ways.get(index).into_iter().flatten() {
-            match came.get_mut(other) {
-                Some(way) if way.is_none() && other != from => *way = Some((number, index)),
-                _ => continue,
-            }
-            queue.push_back(other);
-        }
-    }
-    let mut path = Vec::new();
-    let mut index = to;
-    while let Some((number, before)) = came.get(index).copied().flatten() {
-        path.push(number);
-        index = before;
-    }
-    path.reverse();
-    path
-}
-
-/// Which nodes hang together (disjoint sets with path halving).
-struct Groups(Vec<usize>);
-
-impl Groups {
-    fn new(count: usize) -> Self {
-        Self((0..count).collect())
-    }
-
-    fn top(&mut self, mut index: usize) -> usize {
-        while let Some(&above) = self.0.get(index) {
-            if above == index {
-                break;
-            }
-            let next = self.0.get(above).copied().unwrap_or(above);
-            if let Some(slot) = self.0.get_mut(index) {
-                *slot = next;
-            }
-            index = next;
-        }
-        index
-    }
-
-    /// Joins two groups; false if they were one already.
-    fn join(&mut self, one: usize, other: usize) -> bool {
-        let (one, other) = (self.top(one), self.top(other));
-        if one == other {
-            return false;
-        }
-        if let Some(slot) = self.0.get_mut(other) {
-            *slot = one;
-        }
-        true
     }
 }

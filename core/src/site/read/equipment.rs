@@ -28,7 +28,10 @@ pub(super) fn bank(entry: &mut Entry<'_, '_>) -> Option<BankEntry> {
 
     entry.ordered(&CUT_OFF, cut_off, &NOMINAL, nominal);
     entry.ordered(&NOMINAL, nominal, &HIGHEST, highest);
-    if cut_off.is_some() && cut_off == highest {
+    if nominal.is_none() {
+        entry.ordered(&CUT_OFF, cut_off, &HIGHEST, highest);
+    }
+    if cut_off.is_some() && cut_off == highest && nominal == highest {
         let sentence =
             format!("{} is also the highest voltage; the cut-off must be below", entry.written(&CUT_OFF));
         entry.problem(&CUT_OFF, sentence);
@@ -104,7 +107,7 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
                 format!("both power {power} and current {current} are stated; keep the one on the nameplate"),
             );
         }
-        (false, false) if !entry.may_hide_keys() => entry.problem_here(
+        (false, false) if !entry.is_excused(&[&POWER, &CURRENT]) => entry.problem_here(
             "neither power nor current is stated; write power = \"60 W\" or current = \"5 A\"".to_owned(),
         ),
         _ => {}

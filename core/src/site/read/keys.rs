@@ -76,12 +76,13 @@ const fn key(name: &'static str, needed: &'static str, example: &'static str, ra
 }
 
 const fn flag(name: &'static str) -> Key {
-    key(name, "true or false", "true", ANY)
+    key(name, "true or false", "", ANY)
 }
 
 pub(super) const FORMAT: Key = key("format", "the number of the format", "1", ANY);
 
 pub(super) const NAME: Key = key("name", "a text", "\"pump\"", ANY);
+pub(super) const SITE_NAME: Key = key("name", "a text", "\"Heron Point\"", ANY);
 pub(super) const RULES: Key = key("rules", "a rule set", "\"iec\"", ANY);
 pub(super) const EARTHING: Key = key("earthing", "a pole", "\"negative\"", ANY);
 pub(super) const SITE_AMBIENT: Key =
@@ -124,7 +125,7 @@ pub(super) const NEGATIVE_LENGTH: Key = key("negative_length", "a length", "\"3 
 pub(super) const SIZE: Key = key("size", "a conductor size", "\"16 mm2\"", ANY);
 pub(super) const NEGATIVE_SIZE: Key = key("negative_size", "a conductor size", "\"16 mm2\"", ANY);
 pub(super) const MATERIAL: Key = key("material", "a metal", "\"copper\"", ANY);
-pub(super) const CLASS: Key = key("class", "a class of stranding: 1, 2, 5 or 6", "5", ANY);
+pub(super) const CLASS: Key = key("class", "a class of stranding (1, 2, 5 or 6)", "5", ANY);
 pub(super) const COATING: Key = key("coating", "a coating", "\"tinned\"", ANY);
 pub(super) const INSULATION: Key = key("insulation", "an insulation", "\"PVC 70 degC\"", ANY);
 pub(super) const SHEATHED: Key = flag("sheathed");
@@ -171,17 +172,20 @@ pub(super) const LENGTH: Key = key("length", "a length", "\"50 m\"", METRES);
 pub(super) const PRICE: Key = key("price", "a number", "2.40", PRICE_RANGE);
 pub(super) const RATINGS: Key = key("ratings", "a list of currents", "[\"10 A\", \"15 A\"]", AMPERES);
 pub(super) const CABLE: Key = key("cable", "sections [[stock.cable]]", "", ANY);
+pub(super) const STOCK_DEVICES: Key = key("device", "sections [[stock.device]]", "", ANY);
 pub(super) const LUG: Key = key("lug", "sections [[stock.lug]]", "", ANY);
 
 pub(super) const OVERRIDE: Key = key("override", "a section [rules.override]", "", ANY);
 pub(super) const CONTINUOUS_FACTOR: Key =
     key("continuous_factor", "a number", "1.25", Range::new(Allowed::Between(1.0, 2.0), ""));
+pub(super) const OWN_DROP: Key =
+    key("drop", "a ratio", "\"3 %\"", Range::new(Allowed::AboveUpTo(0.0, 0.2), ""));
 pub(super) const UNFUSED_LENGTH: Key =
-    key("unfused_length", "a length", "\"200 mm\"", Range::new(Allowed::AboveUpTo(0.0, 100.0), "m"));
+    key("unfused_length", "a length", "\"200 mm\"", Range::new(Allowed::AboveUpTo(0.0, 10.0), "m"));
 pub(super) const ENGINE_SPACE: Key = key("engine_space", "a number", "0.85", PART);
 pub(super) const BUNDLING: Key = key("bundling", "a number", "0.7", PART);
 pub(super) const DEVICE_RATIO: Key =
-    key("device_ratio", "a number", "1.0", Range::new(Allowed::AboveUpTo(0.0, 2.0), ""));
+    key("device_ratio", "a number", "1.0", Range::new(Allowed::AboveUpTo(0.0, 1.5), ""));
 pub(super) const ALUMINIUM: Key = key("aluminium", "a decision", "\"admitted\"", ANY);
 
 /// A section: its header, the keys that must stand in it and those that may.
@@ -210,7 +214,7 @@ impl Section {
 
 pub(super) const SITE: Section = Section {
     header: "[site]",
-    needed: &[&NAME, &RULES, &EARTHING, &SITE_AMBIENT],
+    needed: &[&SITE_NAME, &RULES, &EARTHING, &SITE_AMBIENT],
     optional: &[],
     later: &["latitude", "longitude", "altitude"],
 };
@@ -287,7 +291,7 @@ pub(super) const CIRCUIT_JOINT: Section =
     Section::new("[[circuit.joint]]", &[&JOINT_KIND], &[&COUNT, &RESISTANCE]);
 pub(super) const CIRCUIT_PART: Section =
     Section::new("[[circuit.part]]", &[&NAME, &PART_KIND], &[&RATING, &RESISTANCE, &DC_VOLTAGE, &AC_ONLY]);
-pub(super) const STOCK: Section = Section::new("[stock]", &[], &[&CABLE, &DEVICE, &LUG]);
+pub(super) const STOCK: Section = Section::new("[stock]", &[], &[&CABLE, &STOCK_DEVICES, &LUG]);
 pub(super) const STOCK_CABLE: Section = Section::new(
     "[[stock.cable]]",
     &[&SIZE, &INSULATION],
@@ -314,8 +318,25 @@ pub(super) const RULES_SECTION: Section = Section::new("[rules]", &[], &[&OVERRI
 pub(super) const RULES_OVERRIDE: Section = Section::new(
     "[rules.override]",
     &[],
-    &[&CONTINUOUS_FACTOR, &DROP, &UNFUSED_LENGTH, &ENGINE_SPACE, &BUNDLING, &DEVICE_RATIO, &ALUMINIUM],
+    &[&CONTINUOUS_FACTOR, &OWN_DROP, &UNFUSED_LENGTH, &ENGINE_SPACE, &BUNDLING, &DEVICE_RATIO, &ALUMINIUM],
 );
+
+/// Words that people write for a key that has another name here.
+pub(super) const MEANT: [(&str, &str); 12] = [
+    // The length of what? Only the route, or each conductor, is unambiguous (R1).
+    ("length", "one_way"),
+    ("distance", "one_way"),
+    ("run", "one_way"),
+    ("area", "size"),
+    ("cross_section", "size"),
+    ("gauge", "size"),
+    ("voltage", "nominal"),
+    ("type", "kind"),
+    ("grouped", "bundled"),
+    ("temperature", "ambient"),
+    ("fuse", "device"),
+    ("breaker", "device"),
+];
 
 /// Keys at the top of the file, as their headers are written.
 pub(super) const TOP: [(&str, &str); 9] = [
@@ -329,6 +350,9 @@ pub(super) const TOP: [(&str, &str); 9] = [
     ("stock", "[stock]"),
     ("rules", "[rules.override]"),
 ];
+
+/// Sections that may stand several times.
+pub(super) const PLURAL: [&str; 5] = ["bank", "board", "inverter", "load", "circuit"];
 
 /// Sections of the design that this version does not read.
 pub(super) const LATER: [&str; 6] = ["weather", "array", "controller", "converter", "generator", "reading"];

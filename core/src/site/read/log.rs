@@ -83,7 +83,7 @@ impl Log {
     }
 
     fn cut(&mut self) {
-        self.found.sort_by_key(|&(at, _)| at);
+        self.found.sort_by_key(|&(at, ref problem)| (problem.line, at));
         self.dropped = self.dropped.saturating_add(self.found.len().saturating_sub(MOST_KEPT));
         self.found.truncate(MOST_KEPT);
     }

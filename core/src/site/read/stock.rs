@@ -3,8 +3,8 @@
 use super::circuits::{metal, polarity, supply, terminal_range};
 use super::entry::{Entry, Found};
 use super::keys::{
-    BREAKING, CABLE, DEVICE, FAMILY, FULL_RATED, INSULATION, LENGTH, LET_THROUGH_KEY, LUG, PRICE, RATINGS,
-    SHEATHED, SIZE, STOCK, STOCK_CABLE, STOCK_DEVICE, STOCK_LUG, STUD, TERMINAL,
+    BREAKING, CABLE, FAMILY, FULL_RATED, INSULATION, LENGTH, LET_THROUGH_KEY, LUG, PRICE, RATINGS, SHEATHED,
+    SIZE, STOCK, STOCK_CABLE, STOCK_DEVICE, STOCK_DEVICES, STOCK_LUG, STUD, TERMINAL,
 };
 use super::log::Log;
 use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
@@ -13,7 +13,7 @@ use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
 pub(super) fn stock<'d>(text: &'d str, log: &mut Log, found: Found<'d>) -> Stock {
     let mut entry = Entry::open(text, log, &STOCK, found, None);
     let cables = entry.sections(&CABLE, &STOCK_CABLE);
-    let devices = entry.sections(&DEVICE, &STOCK_DEVICE);
+    let devices = entry.sections(&STOCK_DEVICES, &STOCK_DEVICE);
     let lugs = entry.sections(&LUG, &STOCK_LUG);
     Stock {
         cables: cables

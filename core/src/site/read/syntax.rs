@@ -1,11 +1,15 @@
 //! From text to a tree with spans. A syntax error is reported and stepped over, so that it hides nothing else.
 
 use alloc::borrow::ToOwned;
+use alloc::collections::BTreeSet;
 use alloc::format;
 use alloc::string::String;
+use alloc::vec::Vec;
+use core::ops::Range;
 
 use toml::de::{DeTable, DeValue, Error};
 
+use super::keys::PLURAL;
 use super::log::{Cut, Log};
 
 /// Above this size the first syntax error must be mended before the rest is listed: a text of a few MiB can
@@ -18,52 +22,56 @@ const MOST_ENTRIES: usize = 200_000;
 /// Levels of nesting, at most; the format itself needs four.
 const MOST_DEPTH: usize = 32;
 
-/// The text with the parts that stop the parser blanked out; `None` if there are none.
+/// Parses a text; beside the tree, the parts that stopped the parser or confused it.
 ///
 /// The parser recovers from most errors by itself, but reads nothing more after a key without a value, and
 /// forgets a list of sections when the same header comes again with single brackets.
-pub(super) fn blanked(text: &str, log: &mut Log) -> Option<String> {
+pub(super) fn parsed<'t>(text: &'t str, log: &mut Log) -> (Option<DeTable<'t>>, Vec<Range<usize>>) {
     if text.len() > MOST_RECOVERED {
-        if let Err(error) = DeTable::parse(text) {
-            report(text, &error, log);
+        let tree = DeTable::parse(text);
+        if let Err(error) = &tree {
+            report(text, error, log);
             log.push_whole(
                 "the file is over 1 MiB: mend its syntax first, then the rest is checked".to_owned(),
             );
         }
-        return None;
+        return (tree.ok().map(toml::Spanned::into_inner), Vec::new());
     }
-    let (_, errors) = DeTable::parse_recoverable(text);
-    let mut bytes = text.as_bytes().to_vec();
-    let mut changed = false;
+    let (tree, errors) = DeTable::parse_recoverable(text);
+    let mut obstacles: Vec<Range<usize>> = Vec::new();
+    let mut headers: BTreeSet<&str> = BTreeSet::new();
     for error in &errors {
-        report(text, error, log);
-        let Some(span) = error.span() else { continue };
-        let region = if error.message().starts_with("key with no value") {
-            line_of(text, span.start)
-        } else if error.message().starts_with("duplicate key") && is_header(text, span.start) {
-            section_of(text, span.start)
-        } else {
+        let at = place_of(text, error);
+        // Within a section that stands twice, every key may stand twice.
+        if obstacles.last().is_some_and(|last| last.contains(&at)) {
             continue;
-        };
-        for byte in bytes.get_mut(region).into_iter().flatten().filter(|byte| **byte != b'\n') {
-            *byte = b' ';
-            changed = true;
+        }
+        let message = error.message();
+        let is_twice = message.starts_with("duplicate key") && is_header(text, at);
+        let header = error.span().and_then(|span| text.get(span)).filter(|_| is_twice);
+        // Once a section of that name has stood in the wrong form, each later one repeats the error.
+        if header.is_none_or(|name| headers.insert(name)) {
+            report(text, error, log);
+        }
+        if message.starts_with("key with no value") || message.starts_with("recursion limit") {
+            obstacles.push(line_of(text, at));
+        } else if header.is_some() {
+            obstacles.push(section_of(text, at));
         }
     }
-    // Lines are blanked whole, so the text stays UTF-8.
-    if changed { String::from_utf8(bytes).ok() } else { None }
+    (Some(tree.into_inner()), obstacles)
 }
 
-/// Parses what [`blanked`] left. Its errors were reported there, save those the blanking brought to light.
-pub(super) fn tree<'t>(text: &'t str, log: &mut Log) -> Option<DeTable<'t>> {
-    if text.len() > MOST_RECOVERED {
-        return DeTable::parse(text).ok().map(toml::Spanned::into_inner);
+/// The text with some parts blanked out; every offset and line stays where it was.
+pub(super) fn without(text: &str, obstacles: &[Range<usize>]) -> Option<String> {
+    let mut bytes = text.as_bytes().to_vec();
+    for obstacle in obstacles {
+        for byte in bytes.get_mut(obstacle.clone()).into_iter().flatten().filter(|byte| **byte != b'\n') {
+            *byte = b' ';
+        }
     }
-    let (table, errors) = DeTable::parse_recoverable(text);
-    for error in &errors {
-        report(text, error, log);
-    }
-    Some(table.into_inner())
+    // Lines are blanked whole, so this stays UTF-8.
+    String::from_utf8(bytes).ok()
 }
 
 /// Refuses a tree that is too large or too deep to be a site.
@@ -122,11 +130,8 @@ impl Measure {
 /// One syntax error as a sentence of ours, with what to do.
 fn report(text: &str, error: &Error, log: &mut Log) {
     let message = error.message();
-    let (at, found) = match error.span() {
-        Some(span) => (span.start, text.get(span).unwrap_or("")),
-        // The one error without a place: too many dots in a key.
-        None => (dotted(text), ""),
-    };
+    let at = place_of(text, error);
+    let found = error.span().and_then(|span| text.get(span)).unwrap_or("");
     let begins = |with: &str| message.starts_with(with);
     let sentence = if begins("string values must be quoted") && found.is_empty() || begins("missing value") {
         "no value after '='; write one, or take the line out".to_owned()
@@ -135,6 +140,18 @@ fn report(text: &str, error: &Error, log: &mut Log) {
     } else if begins("key with no value") {
         let line = text.get(line_of(text, at)).unwrap_or("").trim();
         format!("'{}' is no line of a site file; write key = value, [section] or # comment", Cut(line))
+    } else if begins("duplicate key") && is_header(text, at) {
+        let start = text.get(line_start(text, at)..at).unwrap_or("").trim();
+        let name = Cut(found);
+        if start == "[[" {
+            format!(
+                "a section [{name}] or [[{name}.…]] stands above the first [[{name}]]; move it below, or mend its header"
+            )
+        } else if PLURAL.contains(&found) {
+            format!("write [[{name}]] with two brackets: the section may stand several times")
+        } else {
+            format!("the section [{name}] stands twice; put all its keys into the first")
+        }
     } else if begins("duplicate key") {
         format!("'{}' stands twice here; take one of them out", Cut(found))
     } else if begins("unclosed array table") || begins("unclosed table") {
@@ -146,12 +163,20 @@ fn report(text: &str, error: &Error, log: &mut Log) {
     } else if begins("invalid basic string") && message.ends_with("`\"`") || begins("invalid literal string")
     {
         "the text in quotation marks is not closed on this line".to_owned()
+    } else if begins("unexpected key or value") {
+        "more stands on this line than one key = value; take it out, or begin it with #".to_owned()
     } else if begins("cannot recurse") || begins("recursion limit") {
         format!("nested deeper than {MOST_DEPTH} levels; no section of a site file needs more than 4")
     } else {
         format!("this is no TOML: {message}")
     };
     log.syntax(at, sentence);
+}
+
+/// Where an error stands.
+fn place_of(text: &str, error: &Error) -> usize {
+    // The one error without a place: too many dots in a key.
+    error.span().map_or_else(|| dotted(text), |span| span.start)
 }
 
 /// Offset of the line with the most dots.
@@ -172,7 +197,7 @@ fn line_start(text: &str, at: usize) -> usize {
     text.get(..at).and_then(|before| before.rfind('\n')).map_or(0, |end| end.saturating_add(1))
 }
 
-fn line_of(text: &str, at: usize) -> core::ops::Range<usize> {
+fn line_of(text: &str, at: usize) -> Range<usize> {
     let start = line_start(text, at);
     let end =
         text.get(at..).and_then(|rest| rest.find('\n')).map_or(text.len(), |end| at.saturating_add(end));
@@ -184,7 +209,7 @@ fn is_header(text: &str, at: usize) -> bool {
 }
 
 /// From the header at an offset to the next header.
-fn section_of(text: &str, at: usize) -> core::ops::Range<usize> {
+fn section_of(text: &str, at: usize) -> Range<usize> {
     let start = line_start(text, at);
     let mut end = line_of(text, at).end;
     for line in text.get(end..).unwrap_or("").split_inclusive('\n') {

@@ -14,8 +14,8 @@ use super::ends::{Kind, Node, Plan, Wire};
 use super::entry::{Entry, Found, section, sections};
 use super::equipment;
 use super::keys::{
-    ALUMINIUM, ALUMINIUM_WORDS, BANK, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, DROP,
-    EARTHING, EARTHING_WORDS, ENGINE_SPACE, FORMAT, INVERTER, LATER, LOAD, OVERRIDE, RULES, RULES_OVERRIDE,
+    ALUMINIUM, ALUMINIUM_WORDS, BANK, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, EARTHING,
+    EARTHING_WORDS, ENGINE_SPACE, FORMAT, INVERTER, LATER, LOAD, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE,
     RULES_SECTION, SITE, SITE_AMBIENT, STOCK, Section, TOP, UNFUSED_LENGTH,
 };
 use super::log::{Cut, Log, nearest};
@@ -28,11 +28,14 @@ use crate::site::model::{Earthing, Site};
 /// Reads a document of moderate length.
 pub(super) fn site(text: &str) -> Result<Site, Problems> {
     let mut log = Log::new(text);
-    let blanked = syntax::blanked(text, &mut log);
-    let text = blanked.as_deref().unwrap_or(text);
-    let site = match syntax::tree(text, &mut log) {
-        Some(tree) if syntax::is_moderate(&tree, &mut log) => document(text, &tree, &mut log),
-        _ => None,
+    let (tree, obstacles) = syntax::parsed(text, &mut log);
+    let site = if obstacles.is_empty() {
+        tree.and_then(|tree| document(text, &tree, &mut log))
+    } else {
+        syntax::without(text, &obstacles).and_then(|text| {
+            let (tree, _) = syntax::parsed(&text, &mut log);
+            document(&text, &tree?, &mut log)
+        })
     };
     match site {
         Some(site) if log.is_empty() => Ok(site),
@@ -41,6 +44,9 @@ pub(super) fn site(text: &str) -> Result<Site, Problems> {
 }
 
 fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
+    if !syntax::is_moderate(tree, log) {
+        return None;
+    }
     if tree.is_empty() {
         if log.is_empty() {
             log.push_whole(
@@ -51,17 +57,19 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
         return None;
     }
     let top = Top { text, tree };
-    top.check_keys(log);
+    let is_all_known = top.check_keys(log);
     top.check_format(log);
 
     let head = top.one("site", &SITE, log);
-    if head.is_none() && !tree.contains_key("site") && !log.has_broken_lines() {
+    // What stands on a broken line, or under a header that is not known, would show up again as missing.
+    let is_whole = is_all_known && !log.has_broken_lines();
+    if is_whole && !tree.contains_key("site") {
         log.push_whole(
             "there is no section [site]; write one with name, rules, earthing and ambient".to_owned(),
         );
     }
     let head = head.map(|found| head_of(&mut Entry::open(text, log, &SITE, found, None)));
-    let overrides = top.overrides(log);
+    let (overrides, overrides_at) = top.overrides(log);
     let stock = top.one("stock", &STOCK, log).map(|found| stock::stock(text, log, found));
 
     let banks = top.many("bank", &BANK, log);
@@ -70,8 +78,7 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
     let loads = top.many("load", &LOAD, log);
     let circuits = top.many("circuit", &CIRCUIT, log);
 
-    // What stands on a broken line would show up again as an unknown name or a missing feed.
-    if !log.has_broken_lines() {
+    if is_whole {
         let nodes = [
             (Kind::Bank, &banks),
             (Kind::Board, &boards),
@@ -93,7 +100,7 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
     let (name, rules, earthing, ambient) = head??;
     Some(Site {
         name,
-        rules: rules_with(rules, overrides, log)?,
+        rules: rules_with(rules, overrides, overrides_at, log)?,
         earthing,
         ambient,
         banks: banks?,
@@ -144,11 +151,11 @@ fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
     Some((name?, rules?, earthing?, ambient?))
 }
 
-fn rules_with(rules: Rules, overrides: Overrides, log: &mut Log) -> Option<Rules> {
+fn rules_with(rules: Rules, overrides: Overrides, at: usize, log: &mut Log) -> Option<Rules> {
     match rules.with_overrides(overrides) {
         Ok(rules) => Some(rules),
         Err(error) => {
-            log.push_whole(format!("[rules.override]: {error}"));
+            log.push(at, RULES_OVERRIDE.header.to_owned(), error.to_string());
             None
         }
     }
@@ -161,7 +168,9 @@ struct Top<'d> {
 }
 
 impl<'d> Top<'d> {
-    fn check_keys(&self, log: &mut Log) {
+    /// Whether every section is known.
+    fn check_keys(&self, log: &mut Log) -> bool {
+        let mut is_all_known = true;
         for key in self.tree.keys() {
             let name: &str = key.get_ref();
             if TOP.iter().any(|&(known, _)| known == name) {
@@ -179,13 +188,15 @@ impl<'d> Top<'d> {
                 let all: Vec<&str> = TOP.iter().map(|&(_, written)| written).collect();
                 format!("no section '{}'; at the top stand {}", Cut(name), all.join(", "))
             };
+            is_all_known &= LATER.contains(&name);
             log.push(at, String::new(), sentence);
         }
+        is_all_known
     }
 
     fn check_format(&self, log: &mut Log) {
         let Some(value) = self.tree.get(FORMAT.name) else {
-            if !log.has_broken_lines() {
+            if !log.has_broken_lines() && !self.is_format_misplaced() {
                 log.push_whole(
                     "key 'format' is missing; write 'format = 1' at the top of the file".to_owned(),
                 );
@@ -200,35 +211,41 @@ impl<'d> Top<'d> {
         }
     }
 
+    /// Whether it stands in a section, which that section reports.
+    fn is_format_misplaced(&self) -> bool {
+        self.tree.values().any(|value| value.get_ref().get(FORMAT.name).is_some())
+    }
+
     fn value(&self, name: &str) -> Option<&'d Spanned<DeValue<'d>>> {
         self.tree.get(name)
     }
 
     fn one(&self, name: &str, form: &Section, log: &mut Log) -> Option<Found<'d>> {
-        section(self.text, log, self.value(name)?, form)
+        section(log, self.value(name)?, form)
     }
 
     fn many(&self, name: &str, form: &Section, log: &mut Log) -> Vec<Found<'d>> {
         self.value(name).map(|value| sections(self.text, log, value, form)).unwrap_or_default()
     }
 
-    fn overrides(&self, log: &mut Log) -> Overrides {
-        let Some(rules) = self.one("rules", &RULES_SECTION, log) else { return Overrides::default() };
+    /// The user's own values and where they stand.
+    fn overrides(&self, log: &mut Log) -> (Overrides, usize) {
+        let none = (Overrides::default(), 0);
+        let Some(rules) = self.one("rules", &RULES_SECTION, log) else { return none };
         // Opened for its keys: under [rules] stands nothing but the overrides.
         Entry::open(self.text, log, &RULES_SECTION, rules, None);
-        let Some(value) = rules.table.get(OVERRIDE.name) else { return Overrides::default() };
-        let Some(found) = section(self.text, log, value, &RULES_OVERRIDE) else {
-            return Overrides::default();
-        };
+        let Some(value) = rules.table.get(OVERRIDE.name) else { return none };
+        let Some(found) = section(log, value, &RULES_OVERRIDE) else { return none };
         let mut entry = Entry::open(self.text, log, &RULES_OVERRIDE, found, None);
-        Overrides {
+        let overrides = Overrides {
             continuous_factor: entry.number(&CONTINUOUS_FACTOR),
-            drop: entry.quantity(&DROP),
+            drop: entry.quantity(&OWN_DROP),
             unfused: entry.quantity(&UNFUSED_LENGTH),
             engine_space: entry.number(&ENGINE_SPACE),
             bundling: entry.number(&BUNDLING),
             device_ratio: entry.number(&DEVICE_RATIO),
             aluminium: entry.word(&ALUMINIUM, ALUMINIUM_WORDS),
-        }
+        };
+        (overrides, found.at)
     }
 }
