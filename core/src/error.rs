@@ -26,6 +26,12 @@ pub enum Allowed {
     Words(&'static str),
 }
 
+impl Allowed {
+    const fn has_no_upper_end(&self) -> bool {
+        matches!(self, Self::Above(_) | Self::AtLeast(_))
+    }
+}
+
 impl fmt::Display for Allowed {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match *self {
@@ -93,7 +99,11 @@ impl fmt::Debug for Snippet {
 #[non_exhaustive]
 pub enum Error {
     /// An input is NaN, infinite or outside its range.
-    #[error("{name} is {value}{}{unit}; it must be {allowed}", if unit.is_empty() { "" } else { " " })]
+    #[error(
+        "{name} is {value}{}{unit}; it must be {allowed}{}",
+        if unit.is_empty() { "" } else { " " },
+        if *value == f64::INFINITY && allowed.has_no_upper_end() { " and finite" } else { "" }
+    )]
     OutOfRange {
         /// The input, as the face spells it.
         name: &'static str,
@@ -160,6 +170,22 @@ pub enum Error {
         /// Examples of what is accepted.
         accepted: &'static str,
     },
+    /// A comma, a second point or a thousands separator stands inside the number.
+    #[error("'{text}' has a separator inside its number; write digits and one point, such as {accepted}")]
+    Separator {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
+    /// The text goes on after its number and unit.
+    #[error("'{text}' is more than one number and one unit; write {accepted}")]
+    MoreThanOne {
+        /// The text as entered.
+        text: Snippet,
+        /// Examples of what is accepted.
+        accepted: &'static str,
+    },
     /// The text is none of the words that are known here.
     #[error("'{text}' is not known here; it must be one of {allowed}")]
     UnknownWord {
@@ -211,16 +237,39 @@ pub enum Error {
     )]
     NoSolution {
         /// Power asked, in watts.
-        #[allow(non_snake_case)]
         asked_W: f64,
         /// Voltage at the source, in volts.
-        #[allow(non_snake_case)]
         source_V: f64,
         /// Loop resistance, in ohms.
         loop_ohm: f64,
         /// The most that can be delivered, in watts.
-        #[allow(non_snake_case)]
         most_W: f64,
+    },
+    /// Sources of different voltages are to be joined in parallel.
+    #[error(
+        "sources of {least_V:.2} V to {most_V:.2} V in parallel would drive {circulating_A:.1} A through each other \
+         without any load; bring them to one voltage first, within {difference_V:.2} V"
+    )]
+    MismatchedSources {
+        /// Least voltage, in volts.
+        least_V: f64,
+        /// Greatest voltage, in volts.
+        most_V: f64,
+        /// Greatest current between them, in amperes.
+        circulating_A: f64,
+        /// Difference that is admitted, in volts.
+        difference_V: f64,
+    },
+    /// No voltage satisfies a network: it cannot carry its constant-power loads.
+    #[error(
+        "no voltage carries the constant-power load of {asked_W:.0} W at node {node} and those beyond it; use larger \
+         cross-sections, shorter runs, less load or a higher voltage"
+    )]
+    Collapse {
+        /// Index of the node in the network.
+        node: usize,
+        /// Constant power asked at that node, in watts.
+        asked_W: f64,
     },
     /// No size or rating that may be used passes every check.
     #[error("no {what} passes every check; {remedy}")]
@@ -235,6 +284,16 @@ pub enum Error {
     NotATree {
         /// What is wrong, and what to do.
         what: &'static str,
+    },
+    /// A face passed another count of numbers than the calculation takes.
+    #[error("{given} {what} are given; the calculation needs {needed}")]
+    WrongCount {
+        /// What was counted: `inputs`, `outputs`.
+        what: &'static str,
+        /// How many there are.
+        given: usize,
+        /// How many it takes.
+        needed: usize,
     },
     /// An iteration did not reach its tolerance.
     #[error("{what} did not settle within {steps} steps; check the inputs for values far from practice")]
@@ -257,14 +316,226 @@ impl Error {
             Self::WrongUnit { .. } => "wrong-unit",
             Self::NotANumber { .. } => "not-a-number",
             Self::NotFinite { .. } => "not-finite",
+            Self::Separator { .. } => "separator",
+            Self::MoreThanOne { .. } => "more-than-one",
             Self::UnknownWord { .. } => "unknown-word",
             Self::TableEnds { .. } => "table-ends",
             Self::NotTabulated { .. } => "not-tabulated",
             Self::Refused { .. } => "refused",
             Self::NoSolution { .. } => "no-solution",
+            Self::MismatchedSources { .. } => "mismatched-sources",
+            Self::Collapse { .. } => "collapse",
             Self::NoneFits { .. } => "none-fits",
             Self::NotATree { .. } => "not-a-tree",
+            Self::WrongCount { .. } => "wrong-count",
             Self::NotSettled { .. } => "not-settled",
         }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+    use std::vec::Vec;
+
+    use super::*;
+    use crate::citation::Seen;
+
+    const TABLE: Citation = Citation::new("IEC 60364-5-52:2009", "Table B.52.14", Seen::Page);
+
+    macro_rules! variants {
+        ($($variant:ident)+) => {
+            /// No wildcard, so that a new variant must be named here and then listed below.
+            fn variant(error: &Error) -> &'static str {
+                match error { $(Error::$variant { .. } => stringify!($variant),)+ }
+            }
+            const VARIANTS: &[&str] = &[$(stringify!($variant)),+];
+        };
+    }
+
+    variants! {
+        OutOfRange
+        Contradiction
+        NoUnit
+        UnknownUnit
+        WrongUnit
+        NotANumber
+        NotFinite
+        Separator
+        MoreThanOne
+        UnknownWord
+        TableEnds
+        NotTabulated
+        Refused
+        NoSolution
+        MismatchedSources
+        Collapse
+        NoneFits
+        NotATree
+        WrongCount
+        NotSettled
+    }
+
+    #[test]
+    fn each_variant_has_its_text_and_slug() {
+        let text = Snippet::new("16 X");
+        let accepted = "'12 m'";
+        let all = [
+            (
+                Error::OutOfRange { name: "one_way", value: -3.0, unit: "m", allowed: Allowed::Above(0.0) },
+                "out-of-range",
+                "one_way is -3 m; it must be greater than 0",
+            ),
+            (
+                Error::Contradiction {
+                    name: "start",
+                    value: 0.9,
+                    unit: "h",
+                    why: "it must not be above target",
+                },
+                "contradiction",
+                "start is 0.9 h; it must not be above target",
+            ),
+            (Error::NoUnit { text, accepted }, "no-unit", "'16 X' has no unit; write '12 m'"),
+            (
+                Error::UnknownUnit { text, accepted },
+                "unknown-unit",
+                "'16 X' has a unit that is not known here; write '12 m'",
+            ),
+            (
+                Error::WrongUnit { text, found: "a voltage", needed: "a length", accepted },
+                "wrong-unit",
+                "'16 X' is a voltage; a length is needed, such as '12 m'",
+            ),
+            (
+                Error::NotANumber { text, accepted },
+                "not-a-number",
+                "'16 X' does not begin with a number; write '12 m'",
+            ),
+            (
+                Error::NotFinite { text, accepted },
+                "not-finite",
+                "'16 X' is not a finite number; write '12 m'",
+            ),
+            (
+                Error::Separator { text, accepted },
+                "separator",
+                "'16 X' has a separator inside its number; write digits and one point, such as '12 m'",
+            ),
+            (
+                Error::MoreThanOne { text, accepted },
+                "more-than-one",
+                "'16 X' is more than one number and one unit; write '12 m'",
+            ),
+            (
+                Error::UnknownWord { text, allowed: "us, iec" },
+                "unknown-word",
+                "'16 X' is not known here; it must be one of us, iec",
+            ),
+            (
+                Error::TableEnds {
+                    what: "ambient",
+                    value: 65.0,
+                    unit: "degC",
+                    table: TABLE,
+                    end: "ends at 60 degC for PVC",
+                    remedy: "choose insulation rated higher",
+                },
+                "table-ends",
+                "ambient is 65 degC; the table (IEC 60364-5-52:2009, Table B.52.14) ends at 60 degC for PVC; choose \
+                 insulation rated higher",
+            ),
+            (
+                Error::NotTabulated { what: "1 AWG", table: TABLE.recalled(), remedy: "state a size" },
+                "not-tabulated",
+                "1 AWG has no value in IEC 60364-5-52:2009, Table B.52.14 (recalled; verify); state a size",
+            ),
+            (
+                Error::Refused { what: "aluminium", why: "use copper", rule: TABLE },
+                "refused",
+                "aluminium is refused: use copper (IEC 60364-5-52:2009, Table B.52.14)",
+            ),
+            (
+                Error::NoSolution { asked_W: 1200.0, source_V: 21.0, loop_ohm: 0.1034, most_W: 1066.2 },
+                "no-solution",
+                "the line cannot deliver 1200 W from 21.00 V through 0.10340 ohm; the most is 1066 W (V²/4R); use a \
+                 larger cross-section, a shorter run or a higher voltage",
+            ),
+            (
+                Error::MismatchedSources {
+                    least_V: 11.8,
+                    most_V: 12.8,
+                    circulating_A: 50.0,
+                    difference_V: 0.1,
+                },
+                "mismatched-sources",
+                "sources of 11.80 V to 12.80 V in parallel would drive 50.0 A through each other without any load; \
+                 bring them to one voltage first, within 0.10 V",
+            ),
+            (
+                Error::Collapse { node: 3, asked_W: 900.0 },
+                "collapse",
+                "no voltage carries the constant-power load of 900 W at node 3 and those beyond it; use larger \
+                 cross-sections, shorter runs, less load or a higher voltage",
+            ),
+            (
+                Error::NoneFits { what: "conductor size", remedy: "add sizes to the stock" },
+                "none-fits",
+                "no conductor size passes every check; add sizes to the stock",
+            ),
+            (
+                Error::NotATree { what: "board B feeds itself; remove one circuit" },
+                "not-a-tree",
+                "board B feeds itself; remove one circuit",
+            ),
+            (
+                Error::WrongCount { what: "inputs", given: 3, needed: 4 },
+                "wrong-count",
+                "3 inputs are given; the calculation needs 4",
+            ),
+            (
+                Error::NotSettled { what: "network", steps: 50 },
+                "not-settled",
+                "network did not settle within 50 steps; check the inputs for values far from practice",
+            ),
+        ];
+        let mut slugs = Vec::new();
+        let listed: Vec<_> = all.iter().map(|(error, ..)| variant(error)).collect();
+        assert_eq!(listed, VARIANTS);
+        for (error, slug, text) in all {
+            assert_eq!(error.slug(), slug);
+            assert_eq!(error.to_string(), text);
+            slugs.push(slug);
+        }
+        slugs.sort_unstable();
+        slugs.dedup();
+        assert_eq!(slugs.len(), VARIANTS.len(), "two variants share a slug");
+    }
+
+    #[test]
+    fn ranges_read_as_sentences() {
+        let told = |value, allowed| Error::OutOfRange { name: "x", value, unit: "", allowed }.to_string();
+        assert_eq!(told(f64::NAN, Allowed::Finite), "x is NaN; it must be a finite number");
+        assert_eq!(
+            told(f64::INFINITY, Allowed::Above(0.0)),
+            "x is inf; it must be greater than 0 and finite"
+        );
+        assert_eq!(told(f64::NEG_INFINITY, Allowed::AtLeast(0.0)), "x is -inf; it must be 0 or more");
+        assert_eq!(told(2.0, Allowed::Between(0.0, 1.0)), "x is 2; it must be between 0 and 1");
+        assert_eq!(
+            told(0.0, Allowed::AboveUpTo(0.0, 1.0)),
+            "x is 0; it must be greater than 0 and at most 1"
+        );
+        assert_eq!(told(0.5, Allowed::Code(3)), "x is 0.5; it must be a whole number from 0 to 2");
+        assert_eq!(told(0.5, Allowed::Words("even")), "x is 0.5; it must be even");
+    }
+
+    #[test]
+    fn a_snippet_is_cut_at_a_character_and_shows_no_control_character() {
+        let long = Snippet::new("0123456789012345678901234567890ΩΩΩ");
+        assert_eq!(long.to_string(), "0123456789012345678901234567890…");
+        assert_eq!(Snippet::new("1\n2").to_string(), "1\\n2");
+        assert_eq!(Snippet::new("").to_string(), "");
     }
 }

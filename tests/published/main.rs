@@ -1,1 +1,6 @@
 //! Tests: published.
+mod conductors;
+mod devices;
+
+mod ampacity;
+mod protection_rules;

@@ -1,1 +1,26 @@
 //! Declaration of the calculations that every face offers.
+//!
+//! Each is declared once, in its room, by the macro `calculations!` of `declare.rs`: from it come the typed
+//! function with its table of inputs, and an [`Entry`] that the faces are generated from. Faces hand over plain
+//! numbers in the declared units; everything is checked on the value in the base unit, so that all faces agree.
+
+#[cfg(feature = "std")]
+mod array;
+mod choice;
+mod declare;
+mod entry;
+pub(crate) mod unit;
+
+#[cfg(feature = "std")]
+pub use self::{array::AtIndex, entry::Array};
+pub use choice::Choice;
+pub(crate) use declare::calculations;
+#[doc(hidden)]
+pub use entry::{Calculation, scalar};
+pub use entry::{Entry, Input, Output};
+
+#[cfg(feature = "std")]
+pub(crate) use array::array;
+
+#[cfg(test)]
+mod tests;

@@ -4,12 +4,17 @@
 //! that are more than a number: conductor sizes, states of charge, charge rates.
 
 mod rate;
+mod readable;
 mod size;
 mod text;
+mod textual;
+mod unit;
 
 pub use rate::{ChargeRate, StateOfCharge};
+pub use readable::{Readable, readable};
 pub use size::{ConductorSize, Designation};
-pub use text::{Dimension, Entered, Exact, Readable, Textual, exact, parse, parse_entered, readable};
+pub use text::{Entered, Exact, Textual, exact, parse, parse_entered};
+pub use unit::Dimension;
 
 pub use uom::si::f64::{
     Area, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, ElectricalResistivity,

@@ -25,6 +25,11 @@ impl ChargeRate {
         Ok(Self(rate))
     }
 
+    /// A rate that the catalogue checks itself.
+    pub(crate) const fn unchecked(rate: f64) -> Self {
+        Self(rate)
+    }
+
     /// The rate per hour.
     pub const fn get(self) -> f64 {
         self.0

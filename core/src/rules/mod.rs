@@ -1,14 +1,33 @@
 //! Rule sets as data: tables, factors, limits, and the order of checks. No physics.
 
+// Unit suffixes keep the symbol's own case: `_A`, `_degC`.
+#![allow(non_snake_case)]
+
+mod ampacity;
+mod answer;
 mod book;
 mod craft_iso;
 mod craft_us;
 mod iec;
+mod overrides;
+mod practice;
+mod query;
 mod table;
 mod us;
+mod usual;
 
+#[cfg(test)]
+mod tests;
+
+pub use answer::Rules;
 pub use book::{
-    Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
-    LoadUse, Overrides, RuleSet, Rules, Space, Terms,
+    AmbientRule, ByLine, ConductorRule, Count, DeviceRule, DropRule, EngineRule, Grouping, Instead,
+    NextRating, Placement, ProtectiveRule, RuleSet, TerminalRule, UnfusedRule,
 };
-pub use table::{AmpacityTable, Band, Cell, Column};
+pub use overrides::{Overridden, Overrides, OwnValue};
+pub use practice::{PracticeFigure, practice_figure};
+pub use query::{
+    Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
+    LoadUse, Space, Terms,
+};
+pub use table::{AmpacityTable, Band, Cell, Column, FactorColumn, FactorTable};

@@ -1,10 +1,20 @@
 //! A whole site: its document, its checks, its report.
 
+mod bank;
+mod finding;
+mod flow;
+mod graph;
 mod model;
+mod plan;
 mod read;
+mod report;
+mod text;
+mod wiring;
 
+pub use finding::{Finding, Severity};
 pub use model::{
-    BankEntry, Board, CircuitEntry, DeviceEntry, Earthing, End, InverterEntry, JointEntry, LoadEntry, LoadKind,
-    Part, PartKind, Pole, Return, Site, Stock, StockCable, StockDevice, StockLug,
+    BankEntry, Board, CircuitEntry, DeviceEntry, Earthing, End, InverterEntry, JointEntry, LoadEntry,
+    LoadKind, Part, PartKind, Pole, Return, Site, Stock, StockCable, StockDevice, StockLug,
 };
-pub use read::{Problem, Problems, read};
+pub use report::{CircuitLine, DeviceLine, Purchase, Report, inspect};
+pub use read::{Problem, Problems, read, read_bytes};

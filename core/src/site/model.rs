@@ -6,42 +6,12 @@ use alloc::vec::Vec;
 use crate::battery::Chemistry;
 use crate::cable::{Class, Coating, Insulation, JointKind, Material, Stud};
 use crate::device::{Family, Polarity, Supply};
+pub use crate::protection::{Earthing, End, Pole};
 use crate::quantity::{
     ConductorSize, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power,
     Ratio, ThermodynamicTemperature,
 };
 use crate::rules::{Installation, LoadUse, Rules, Space};
-
-/// Which pole is tied to earth (`earthing`, mandatory: R19).
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Earthing {
-    /// `negative`: the negative pole is earthed at one point.
-    Negative,
-    /// `positive`.
-    Positive,
-    /// `floating`: neither pole is earthed.
-    Floating,
-}
-
-/// A pole of the system.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Pole {
-    /// `positive`.
-    Positive,
-    /// `negative`.
-    Negative,
-    /// `both`.
-    Both,
-}
-
-/// End of a circuit.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum End {
-    /// `from`.
-    From,
-    /// `to`.
-    To,
-}
 
 /// The whole document.
 #[derive(Clone, Debug)]
@@ -190,6 +160,7 @@ pub enum Return {
 
 /// `[[circuit]]`: one run of two conductors between two ends.
 #[derive(Clone, Debug)]
+#[allow(clippy::struct_excessive_bools)] // they are the flags of the file, each with its key
 pub struct CircuitEntry {
     /// `name`.
     pub name: String,
@@ -256,6 +227,7 @@ pub struct CircuitEntry {
 
 /// `[[circuit.device]]`.
 #[derive(Clone, Debug)]
+#[allow(non_snake_case)] // units keep their case: A2s
 pub struct DeviceEntry {
     /// `name`; `F1`, `F2` … by order in the file if absent.
     pub name: String,
@@ -280,7 +252,6 @@ pub struct DeviceEntry {
     /// `from_source = "150 mm"`: conductor between that end and the device.
     pub from_source: Option<Length>,
     /// `let_through = "12000 A2s"`: I²t at the greatest prospective current, A²·s.
-    #[allow(non_snake_case)]
     pub let_through_A2s: Option<f64>,
     /// `terminal_range = ["2.5 mm2", "35 mm2"]`.
     pub terminal_range: Option<(ConductorSize, ConductorSize)>,
@@ -314,6 +285,19 @@ pub enum PartKind {
     Connector,
     /// `holder`.
     Holder,
+}
+
+impl PartKind {
+    /// The kind of joint it counts as in the path.
+    pub const fn joint(self) -> JointKind {
+        match self {
+            Self::Switch | Self::Selector => JointKind::Switch,
+            Self::Relay => JointKind::Relay,
+            Self::Shunt => JointKind::Shunt,
+            Self::Connector => JointKind::Connector,
+            Self::Holder => JointKind::Fuse,
+        }
+    }
 }
 
 /// `[[circuit.part]]`.
@@ -369,6 +353,7 @@ pub struct StockCable {
 
 /// `[[stock.device]]`.
 #[derive(Clone, Debug)]
+#[allow(non_snake_case)] // units keep their case: A2s
 pub struct StockDevice {
     /// Line in the file.
     pub line: u32,
@@ -385,7 +370,6 @@ pub struct StockDevice {
     /// `full_rated`.
     pub full_rated: bool,
     /// `let_through`, A²·s.
-    #[allow(non_snake_case)]
     pub let_through_A2s: Option<f64>,
     /// `terminal_range`.
     pub terminal_range: Option<(ConductorSize, ConductorSize)>,

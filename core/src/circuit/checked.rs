@@ -1,0 +1,108 @@
+//! The result of one check: passed, failed, or not checked; never "safe".
+
+use core::fmt;
+
+use crate::citation::{Citation, Seen};
+use crate::rules::Check;
+
+/// Outcome of a check.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Outcome {
+    /// The value keeps its limit.
+    Passed,
+    /// It does not.
+    Failed,
+    /// A datum is missing; nothing is known.
+    NotChecked,
+}
+
+/// How value and limit relate.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Relation {
+    /// The value may not exceed the limit.
+    AtMost,
+    /// The value may not fall below it.
+    AtLeast,
+    /// There is no number: a yes or no.
+    Plain,
+}
+
+/// One check of a run, with its numbers and its source.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Checked {
+    /// Which check.
+    pub check: Check,
+    /// How it went.
+    pub outcome: Outcome,
+    /// The value found, in `unit`.
+    pub actual: f64,
+    /// Its limit, in `unit`.
+    pub limit: f64,
+    /// Unit of both.
+    pub unit: &'static str,
+    /// How they relate.
+    pub relation: Relation,
+    /// What was compared, or why nothing was.
+    pub what: &'static str,
+    /// Source of the limit.
+    pub citation: Citation,
+}
+
+impl Checked {
+    /// A value that may not exceed a limit. NaN fails.
+    pub(super) fn at_most(check: Check, actual: f64, limit: f64, unit: &'static str, what: &'static str, citation: Citation) -> Self {
+        let outcome = if actual <= limit { Outcome::Passed } else { Outcome::Failed };
+        Self { check, outcome, actual, limit, unit, relation: Relation::AtMost, what, citation }
+    }
+
+    /// A value that may not fall below a limit. NaN fails.
+    pub(super) fn at_least(check: Check, actual: f64, limit: f64, unit: &'static str, what: &'static str, citation: Citation) -> Self {
+        let outcome = if actual >= limit { Outcome::Passed } else { Outcome::Failed };
+        Self { check, outcome, actual, limit, unit, relation: Relation::AtLeast, what, citation }
+    }
+
+    /// A check without numbers.
+    pub(super) fn plain(check: Check, outcome: Outcome, what: &'static str, citation: Citation) -> Self {
+        Self { check, outcome, actual: 0.0, limit: 0.0, unit: "", relation: Relation::Plain, what, citation }
+    }
+
+    /// Part of the limit that is used; above 1 it failed. Nothing for checks without numbers or not made.
+    pub fn used(&self) -> Option<f64> {
+        if self.outcome == Outcome::NotChecked {
+            return None;
+        }
+        match self.relation {
+            Relation::AtMost if self.limit > 0.0 => Some(self.actual / self.limit),
+            Relation::AtLeast if self.actual > 0.0 => Some(self.limit / self.actual),
+            _ => None,
+        }
+    }
+
+    /// The words of a passed check: a recalled value never "conforms".
+    pub fn verdict(&self) -> &'static str {
+        match (self.outcome, self.citation.seen) {
+            (Outcome::Passed, Seen::Recalled) => "conforms to the recalled value; verify",
+            (Outcome::Passed, Seen::Practice) => "within common practice",
+            (Outcome::Passed, Seen::Stated) => "within the stated value",
+            (Outcome::Passed, Seen::Page | Seen::Derived) => "conforms",
+            (Outcome::Failed, _) => "does not conform",
+            (Outcome::NotChecked, _) => "not checked",
+        }
+    }
+}
+
+impl fmt::Display for Checked {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self.relation {
+            Relation::Plain => write!(f, "{}: {}", self.what, self.verdict())?,
+            _ if self.outcome == Outcome::NotChecked => write!(f, "{}: not checked", self.what)?,
+            Relation::AtMost => {
+                write!(f, "{}: {:.3} {unit}, at most {:.3} {unit}: {}", self.what, self.actual, self.limit, self.verdict(), unit = self.unit)?;
+            }
+            Relation::AtLeast => {
+                write!(f, "{}: {:.3} {unit}, at least {:.3} {unit}: {}", self.what, self.actual, self.limit, self.verdict(), unit = self.unit)?;
+            }
+        }
+        write!(f, " ({})", self.citation)
+    }
+}

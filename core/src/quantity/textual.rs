@@ -1,0 +1,63 @@
+//! Which quantity is written in which units.
+
+use core::marker::PhantomData;
+
+use super::text::Textual;
+use super::unit::Dimension;
+use super::{
+    Area, ChargeRate, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance,
+    ElectricalResistivity, Energy, Length, LinearResistance, Power, Ratio, StateOfCharge,
+    TemperatureInterval, ThermodynamicTemperature, Time,
+};
+use crate::error::Error;
+
+macro_rules! textual {
+    ($($quantity:ident: $dimension:ident;)+) => {$(
+        impl Textual for $quantity {
+            const DIMENSION: Dimension = Dimension::$dimension;
+            fn from_base(value: f64) -> Result<Self, Error> {
+                Ok(Self { dimension: PhantomData, units: PhantomData, value })
+            }
+            fn base(self) -> f64 {
+                self.value
+            }
+        }
+    )+};
+}
+
+textual! {
+    Length: Length;
+    Area: Area;
+    ElectricCurrent: Current;
+    ElectricPotential: Voltage;
+    Power: Power;
+    Energy: Energy;
+    ElectricCharge: Charge;
+    ElectricalResistance: Resistance;
+    LinearResistance: LinearResistance;
+    ElectricalResistivity: Resistivity;
+    ThermodynamicTemperature: Temperature;
+    TemperatureInterval: TemperatureDifference;
+    Time: Time;
+    Ratio: Ratio;
+}
+
+impl Textual for ChargeRate {
+    const DIMENSION: Dimension = Dimension::Rate;
+    fn from_base(value: f64) -> Result<Self, Error> {
+        Self::per_hour(value)
+    }
+    fn base(self) -> f64 {
+        self.get()
+    }
+}
+
+impl Textual for StateOfCharge {
+    const DIMENSION: Dimension = Dimension::Ratio;
+    fn from_base(value: f64) -> Result<Self, Error> {
+        Self::new(value)
+    }
+    fn base(self) -> f64 {
+        self.get()
+    }
+}

@@ -1,0 +1,198 @@
+//! Findings: what the inspection has to say, each with place, limit, actual, rule, source and remedy.
+
+use alloc::format;
+use alloc::string::{String, ToString};
+use core::fmt;
+
+use crate::cable::Material;
+use crate::circuit::{Checked, Outcome};
+use crate::rules::Check;
+
+/// How grave a finding is.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Severity {
+    /// It can burn, arc or hurt.
+    Danger,
+    /// It breaks a rule or does not work.
+    Nonconforming,
+    /// A datum is missing: nothing is known.
+    NotChecked,
+    /// Worth doing; no rule demands it.
+    Advice,
+}
+
+impl Severity {
+    /// The word in the report.
+    pub const fn word(self) -> &'static str {
+        match self {
+            Self::Danger => "DANGER",
+            Self::Nonconforming => "NONCONFORMING",
+            Self::NotChecked => "NOT CHECKED",
+            Self::Advice => "ADVICE",
+        }
+    }
+}
+
+/// One finding.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Finding {
+    /// How grave.
+    pub severity: Severity,
+    /// Rule of the design behind it: `R4`.
+    pub rule: &'static str,
+    /// Permanent short name of its kind.
+    pub slug: &'static str,
+    /// Where: `circuit "pump", F3`.
+    pub place: String,
+    /// Line of the entry in the site file.
+    pub line: u32,
+    /// What was found, with value and limit.
+    pub text: String,
+    /// Source of the limit; empty where there is none.
+    pub source: String,
+    /// What to do.
+    pub remedy: &'static str,
+}
+
+impl fmt::Display for Finding {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        write!(f, "{} {} (line {}): {}", self.rule, self.place, self.line, self.text)?;
+        if !self.source.is_empty() {
+            write!(f, " [{}]", self.source)?;
+        }
+        if !self.remedy.is_empty() {
+            write!(f, "; {}", self.remedy)?;
+        }
+        write!(f, " <{}>", self.slug)
+    }
+}
+
+/// What a failed check of a run means: its rule, name, gravity and remedy.
+const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'static str) {
+    match check {
+        Check::Conductor => ("R18", "conductor-refused", Severity::Nonconforming, "replace the conductor"),
+        Check::LeastSize => ("R4", "conductor-below-least-size", Severity::Nonconforming, "use a larger conductor"),
+        Check::TerminalColumn => (
+            "R4",
+            "terminal-column-exceeded",
+            Severity::Danger,
+            "use a larger conductor, or terminals marked for the higher temperature at both ends",
+        ),
+        Check::Ampacity => (
+            "R4",
+            "ampacity-exceeded",
+            Severity::Danger,
+            "use a larger conductor, a higher insulation rating, less grouping or a cooler way",
+        ),
+        Check::DeviceCarries => (
+            "R5",
+            "device-below-load",
+            Severity::Nonconforming,
+            "use a larger device, and a conductor that it protects",
+        ),
+        Check::DeviceProtects => (
+            "R4",
+            "device-above-ampacity",
+            Severity::Danger,
+            "use a smaller device or a larger conductor",
+        ),
+        Check::OpensLate => (
+            "R5",
+            "device-opens-late",
+            Severity::Danger,
+            "use a smaller rating, a family that opens earlier, or a larger conductor",
+        ),
+        Check::Drop => ("R17", "drop-exceeded", Severity::Nonconforming, "use a larger conductor or a shorter run"),
+        Check::LoadVoltage => (
+            "R3",
+            "voltage-too-low-at-load",
+            Severity::Nonconforming,
+            "use larger conductors on its path, or a higher cut-off",
+        ),
+        Check::Breaking => (
+            "R6",
+            "breaking-capacity-too-low",
+            Severity::Danger,
+            "use a device with a higher breaking capacity on DC",
+        ),
+        Check::LeastFault => (
+            "R6",
+            "least-fault-too-small",
+            Severity::Danger,
+            "use a smaller device, a larger conductor or a shorter run",
+        ),
+        Check::Withstand => (
+            "R6",
+            "withstand-exceeded",
+            Severity::Danger,
+            "use a larger conductor or a device that lets less through",
+        ),
+        Check::DeviceSupply => (
+            "R6",
+            "device-not-for-this-supply",
+            Severity::Danger,
+            "use a device rated for DC at this voltage",
+        ),
+        Check::Termination => (
+            "R4",
+            "terminal-range",
+            Severity::Nonconforming,
+            "use a device or an adapter made for this conductor",
+        ),
+    }
+}
+
+/// The finding of a check that was not passed; `None` for one that was.
+pub(super) fn of_check(checked: &Checked, place: &str, line: u32, material: Material, required: bool) -> Option<Finding> {
+    let (rule, slug, grave, remedy) = meaning(checked.check);
+    let (severity, text) = match checked.outcome {
+        Outcome::Passed => return None,
+        Outcome::NotChecked => (Severity::NotChecked, format!("check not made: {}", checked.what)),
+        Outcome::Failed => {
+            let severity = match checked.check {
+                // A recommendation that is not kept is advice.
+                Check::Drop if !required => Severity::Advice,
+                Check::Conductor if material != Material::Copper => Severity::Danger,
+                _ => grave,
+            };
+            (severity, words(checked))
+        }
+    };
+    Some(Finding {
+        severity,
+        rule,
+        slug,
+        place: place.to_string(),
+        line,
+        text,
+        source: checked.citation.to_string(),
+        remedy: if checked.outcome == Outcome::NotChecked { "" } else { remedy },
+    })
+}
+
+/// A failed check in words: what, value, limit.
+fn words(checked: &Checked) -> String {
+    use crate::circuit::Relation;
+    let Checked { what, actual, limit, unit, .. } = checked;
+    match checked.relation {
+        Relation::Plain => (*what).to_string(),
+        Relation::AtMost => format!("{what}: {} {unit}, at most {} {unit}", digits(*actual), digits(*limit)),
+        Relation::AtLeast => format!("{what}: {} {unit}, at least {} {unit}", digits(*actual), digits(*limit)),
+    }
+}
+
+/// Three to four digits, as a table of the trade would print them.
+pub(super) fn digits(value: f64) -> String {
+    let size = libm::fabs(value);
+    if size >= 1000.0 {
+        format!("{value:.0}")
+    } else if size >= 100.0 {
+        format!("{value:.1}").trim_end_matches(".0").to_string()
+    } else if size >= 1.0 {
+        format!("{value:.2}").trim_end_matches('0').trim_end_matches('.').to_string()
+    } else if value == 0.0 {
+        "0".to_string()
+    } else {
+        format!("{value:.3}")
+    }
+}

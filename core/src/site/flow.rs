@@ -1,0 +1,390 @@
+//! Flows of the plan: currents and voltages in the worst hour, prospective currents at both ends of each circuit.
+
+use alloc::vec;
+use alloc::vec::Vec;
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::electrical_resistance::ohm;
+use uom::si::power::watt;
+use uom::si::ratio::ratio;
+use uom::si::thermodynamic_temperature::degree_celsius;
+
+use super::bank::Ends;
+use super::graph::{Graph, Item, Tree};
+use super::model::{LoadKind, Return, Site};
+use super::plan::sources;
+use crate::cable::{Conductor, least_linear_resistance, linear_resistance};
+use crate::error::Error;
+use crate::network::{
+    FaultNode, FaultState, NodeLoad, NodeState, Source, TreeNode, prospective, solve,
+};
+use crate::quantity::{
+    ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, ThermodynamicTemperature,
+};
+use crate::rules::LoadUse;
+
+/// What flows in one circuit.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Flow {
+    /// Design current, A.
+    pub current: f64,
+    /// Part of it that flows for three hours or more.
+    pub continuous_share: f64,
+    /// Voltage at the circuit's end on the source's side in the worst hour, V.
+    pub beginning: f64,
+    /// Drop from the source to there, V.
+    pub drop_before: f64,
+    /// Loop resistance that was used, ohm.
+    pub ohms: f64,
+    /// Nominal and highest voltage of its bank, V.
+    pub nominal: f64,
+    pub highest: f64,
+    /// Of what hangs at the far end.
+    pub usage: LoadUse,
+    pub least_voltage: Option<f64>,
+    pub load_terminal: Option<ThermodynamicTemperature>,
+    /// Greatest prospective current just behind the beginning, and from the far side at the end.
+    pub fault_at_beginning: Option<ElectricCurrent>,
+    pub fault_at_end: Option<ElectricCurrent>,
+    /// Weakest sources at both ends.
+    pub weakest_at_beginning: Option<Source>,
+    pub weakest_at_end: Option<Source>,
+    /// Voltage at the far end while the largest start there runs, V, with that start's extra current.
+    pub start: Option<f64>,
+}
+
+/// Conductors, positive and negative, and joints of a circuit.
+pub(super) type Wired = (Conductor, Conductor, ElectricalResistance);
+
+/// The flows of a whole site.
+pub(super) struct Flows {
+    /// In the order of the document.
+    pub circuits: Vec<Flow>,
+    /// The first collapse met: tree, node, error.
+    pub collapse: Option<(usize, usize, Error)>,
+    /// Circuits where the network collapsed.
+    pub collapsed: Vec<usize>,
+}
+
+impl Flows {
+    pub fn new(site: &Site, graph: &Graph, trees: &[Tree], wired: &[Wired], temperatures: &[Option<f64>]) -> Self {
+        let banks = sources(site);
+        let ohms = |index: usize| loop_ohms(site, wired, index, temperatures.get(index).copied().flatten());
+        let mut flows = Self { circuits: vec![none(); site.circuits.len()], collapse: None, collapsed: Vec::new() };
+        for (number, tree) in trees.iter().enumerate() {
+            let Some(Item::Bank(root)) = tree.nodes.first().map(|n| n.item) else { continue };
+            let Some(bank) = site.banks.get(root) else { continue };
+            flows.describe(site, tree, bank.nominal.get::<volt>(), bank.highest.get::<volt>(), &ohms);
+            let low = solve_tree(site, tree, bank.nominal, bank.cut_off, &ohms);
+            let low = low.unwrap_or_else(|error| {
+                flows.note_collapse(number, tree, error);
+                linear(site, tree, bank.nominal, bank.cut_off, &ohms)
+            });
+            flows.take_low(site, tree, &low, bank.cut_off.get::<volt>());
+            if any_resistive(site)
+                && let Ok(high) = solve_tree(site, tree, bank.nominal, bank.highest, &ohms)
+            {
+                flows.take_currents(tree, &high);
+            }
+            // Each further bank may have to feed the whole tree alone.
+            for other in tree.nodes.iter().skip(1).filter_map(|n| match n.item {
+                Item::Bank(other) => Some(other),
+                _ => None,
+            }) {
+                let (Some(turned), Some(bank)) = (graph.tree_from(other), site.banks.get(other)) else { continue };
+                let solved = solve_tree(site, &turned, bank.nominal, bank.cut_off, &ohms)
+                    .unwrap_or_else(|_| linear(site, &turned, bank.nominal, bank.cut_off, &ohms));
+                flows.take_currents(&turned, &solved);
+            }
+            flows.take_faults(site, tree, &banks, wired);
+        }
+        // Stated currents and the user's own diversity.
+        for (flow, circuit) in flows.circuits.iter_mut().zip(&site.circuits) {
+            flow.current *= circuit.diversity;
+            if let Some(stated) = circuit.current {
+                flow.current = flow.current.max(stated.get::<ampere>());
+            }
+        }
+        flows
+    }
+
+    /// What does not depend on currents: voltages, what hangs at the end, shares.
+    fn describe(&mut self, site: &Site, tree: &Tree, nominal: f64, highest: f64, ohms: &impl Fn(usize) -> f64) {
+        let mut sums = vec![(0.0, 0.0); tree.nodes.len()];
+        for (index, node) in tree.nodes.iter().enumerate().rev() {
+            let (continuous, whole) = nominal_watts(site, node.item, nominal);
+            let Some(own) = sums.get_mut(index) else { continue };
+            own.0 += continuous;
+            own.1 += whole;
+            let own = *own;
+            if index > 0
+                && let Some(parent) = sums.get_mut(node.parent)
+            {
+                parent.0 += own.0;
+                parent.1 += own.1;
+            }
+        }
+        for (node, (continuous, whole)) in tree.nodes.iter().zip(sums) {
+            let Some(index) = node.circuit else { continue };
+            let Some(flow) = self.circuits.get_mut(index) else { continue };
+            flow.nominal = nominal;
+            flow.highest = highest;
+            flow.ohms = ohms(index);
+            // Where nothing is known of the use (bank to bank), all of it counts as continuous.
+            flow.continuous_share = if whole > 0.0 { continuous / whole } else { 1.0 };
+            match node.item {
+                Item::Load(i) => {
+                    if let Some(load) = site.loads.get(i) {
+                        flow.usage = load.usage;
+                        flow.least_voltage = load.least.map(|v| v.get::<volt>());
+                        flow.load_terminal = load.terminal;
+                    }
+                }
+                Item::Inverter(i) => {
+                    if let Some(inverter) = site.inverters.get(i) {
+                        flow.least_voltage = inverter.least.map(|v| v.get::<volt>());
+                        flow.load_terminal = inverter.terminal;
+                    }
+                }
+                // A feeder of boards is held to the stricter limit of panel feeders (R17).
+                Item::Board(_) => flow.usage = LoadUse::Critical,
+                Item::Bank(_) => {}
+            }
+        }
+    }
+
+    fn note_collapse(&mut self, number: usize, tree: &Tree, error: Error) {
+        let node = match error {
+            Error::Collapse { node, .. } => node,
+            _ => 0,
+        };
+        self.collapse.get_or_insert((number, node, error));
+        if let Some(circuit) = tree.nodes.get(node).and_then(|n| n.circuit) {
+            self.collapsed.push(circuit);
+        }
+    }
+
+    fn take_low(&mut self, site: &Site, tree: &Tree, states: &[NodeState], emf: f64) {
+        self.take_currents(tree, states);
+        let mut path_ohms = vec![0.0; tree.nodes.len()];
+        for (index, node) in tree.nodes.iter().enumerate() {
+            let Some(circuit) = node.circuit else { continue };
+            let above = states.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
+            let here = states.get(index).map_or(0.0, |s| s.voltage.get::<volt>());
+            let upstream = path_ohms.get(node.parent).copied().unwrap_or(0.0);
+            let Some(flow) = self.circuits.get_mut(circuit) else { continue };
+            // A collapsed network may fall below zero here; a run begins at some positive voltage.
+            flow.beginning = above.max(0.01 * emf);
+            flow.drop_before = (emf - above).clamp(0.0, emf);
+            if let Some(own) = path_ohms.get_mut(index) {
+                *own = upstream + flow.ohms;
+            }
+            if let Item::Load(i) = node.item
+                && let Some(load) = site.loads.get(i)
+                && let Some(start) = load.start
+            {
+                let count = f64::from(load.count.max(1));
+                // One of them starts while the rest runs.
+                let running = states.get(index).map_or(0.0, |s| s.current.get::<ampere>()) / count;
+                let extra = (start.get::<ampere>() - running).max(0.0);
+                flow.start = Some(here - extra * (upstream + flow.ohms));
+            }
+        }
+    }
+
+    fn take_currents(&mut self, tree: &Tree, states: &[NodeState]) {
+        for (node, state) in tree.nodes.iter().zip(states) {
+            if let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) {
+                flow.current = flow.current.max(libm::fabs(state.current.get::<ampere>()));
+            }
+        }
+    }
+
+    fn take_faults(&mut self, site: &Site, tree: &Tree, banks: &[Ends], wired: &[Wired]) {
+        let source = |item: Item, pick: fn(&Ends) -> Option<Source>| match item {
+            Item::Bank(i) => banks.get(i).and_then(pick),
+            _ => None,
+        };
+        let unknown = |pick: fn(&Ends) -> Option<Source>| {
+            tree.nodes.iter().any(|n| matches!(n.item, Item::Bank(_)) && source(n.item, pick).is_none())
+        };
+        let run = |pick: fn(&Ends) -> Option<Source>, ohms: &dyn Fn(usize) -> f64| -> Option<Vec<FaultState>> {
+            // One bank of unknown current makes every sum unknown.
+            if unknown(pick) {
+                return None;
+            }
+            let nodes: Vec<FaultNode> = tree
+                .nodes
+                .iter()
+                .map(|n| FaultNode {
+                    parent: n.parent,
+                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
+                    source: source(n.item, pick),
+                })
+                .collect();
+            let mut states = vec![FaultState::default(); nodes.len()];
+            prospective(&nodes, &mut states).ok().map(|()| states)
+        };
+        let strongest = run(|e| e.strongest, &|c| cold_ohms(site, wired, c));
+        let weakest = run(|e| e.weakest, &|c| loop_ohms(site, wired, c, None));
+        for (index, node) in tree.nodes.iter().enumerate() {
+            let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+            if let Some(state) = strongest.as_ref().and_then(|s| s.get(index)) {
+                flow.fault_at_beginning = Some(state.at_beginning);
+                flow.fault_at_end = Some(state.from_below);
+            }
+            if let Some(state) = weakest.as_ref().and_then(|s| s.get(index)) {
+                flow.weakest_at_beginning = state.source_at_beginning();
+                flow.weakest_at_end = state.source_at_end();
+            }
+        }
+    }
+}
+
+const fn none() -> Flow {
+    Flow {
+        current: 0.0,
+        continuous_share: 1.0,
+        beginning: 0.0,
+        drop_before: 0.0,
+        ohms: 0.0,
+        nominal: 0.0,
+        highest: 0.0,
+        usage: LoadUse::Other,
+        least_voltage: None,
+        load_terminal: None,
+        fault_at_beginning: None,
+        fault_at_end: None,
+        weakest_at_beginning: None,
+        weakest_at_end: None,
+        start: None,
+    }
+}
+
+fn any_resistive(site: &Site) -> bool {
+    site.loads.iter().any(|l| l.kind == LoadKind::Resistive)
+}
+
+/// Continuous and whole power of an item at nominal voltage, W.
+fn nominal_watts(site: &Site, item: Item, nominal: f64) -> (f64, f64) {
+    match item {
+        Item::Load(i) => site.loads.get(i).map_or((0.0, 0.0), |load| {
+            let each = load.power.map_or_else(
+                || load.current.map_or(0.0, |a| a.get::<ampere>() * nominal),
+                |p| p.get::<watt>(),
+            );
+            let whole = each * f64::from(load.count);
+            (if load.continuous { whole } else { 0.0 }, whole)
+        }),
+        Item::Inverter(i) => site.inverters.get(i).map_or((0.0, 0.0), |inverter| {
+            let whole = inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>();
+            (whole, whole)
+        }),
+        Item::Bank(_) | Item::Board(_) => (0.0, 0.0),
+    }
+}
+
+/// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
+fn node_load(site: &Site, item: Item, nominal: ElectricPotential, as_current: Option<ElectricPotential>) -> NodeLoad {
+    let mut node = NodeLoad { reference: nominal, ..NodeLoad::default() };
+    let (_, whole) = nominal_watts(site, item, nominal.get::<volt>());
+    let whole = Power::new::<watt>(whole);
+    let kind = match item {
+        Item::Load(i) => site.loads.get(i).map_or(LoadKind::Power, |l| l.kind),
+        _ => LoadKind::Power,
+    };
+    match (kind, as_current) {
+        (LoadKind::Power, Some(at)) => node.current = whole / at,
+        (LoadKind::Power, None) => node.power = whole,
+        (LoadKind::Current, _) => node.current = whole / nominal,
+        (LoadKind::Resistive, _) => node.resistive = whole,
+    }
+    node
+}
+
+fn solve_tree(
+    site: &Site,
+    tree: &Tree,
+    nominal: ElectricPotential,
+    emf: ElectricPotential,
+    ohms: &impl Fn(usize) -> f64,
+) -> Result<Vec<NodeState>, Error> {
+    run_solver(site, tree, nominal, emf, ohms, None)
+}
+
+/// With constant powers as constant currents: always has a solution, and stands in where there is none.
+fn linear(
+    site: &Site,
+    tree: &Tree,
+    nominal: ElectricPotential,
+    emf: ElectricPotential,
+    ohms: &impl Fn(usize) -> f64,
+) -> Vec<NodeState> {
+    run_solver(site, tree, nominal, emf, ohms, Some(emf))
+        .unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
+}
+
+fn run_solver(
+    site: &Site,
+    tree: &Tree,
+    nominal: ElectricPotential,
+    emf: ElectricPotential,
+    ohms: &impl Fn(usize) -> f64,
+    as_current: Option<ElectricPotential>,
+) -> Result<Vec<NodeState>, Error> {
+    let nodes: Vec<TreeNode> = tree
+        .nodes
+        .iter()
+        .map(|n| TreeNode {
+            parent: n.parent,
+            resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
+            load: node_load(site, n.item, nominal, as_current),
+            source: None,
+        })
+        .collect();
+    let mut states = vec![NodeState::default(); nodes.len()];
+    // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
+    let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
+    solve(root, &nodes, &mut states)?;
+    Ok(states)
+}
+
+/// Loop of a circuit at a conductor temperature, or at the insulation's rating where none is known yet.
+fn loop_ohms(site: &Site, wired: &[Wired], index: usize, at_degC: Option<f64>) -> f64 {
+    let Some((circuit, (positive, negative, joints))) = site.circuits.get(index).zip(wired.get(index)) else {
+        return 0.0;
+    };
+    let of = |conductor: &Conductor, length: Length| -> f64 {
+        let at = ThermodynamicTemperature::new::<degree_celsius>(
+            at_degC.unwrap_or_else(|| conductor.insulation.rating_degC()),
+        );
+        linear_resistance(conductor, at).map_or(0.0, |r| {
+            let run: ElectricalResistance = r * length;
+            run.get::<ohm>()
+        })
+    };
+    let back = match circuit.way_back {
+        Return::Chassis(Some(stated)) => stated.get::<ohm>(),
+        Return::Chassis(None) | Return::Conductor => of(negative, circuit.negative_length),
+    };
+    of(positive, circuit.positive_length) + back + joints.get::<ohm>()
+}
+
+/// The least loop of a circuit: metal at the coldest ambient, full area, joints left out (R6).
+fn cold_ohms(site: &Site, wired: &[Wired], index: usize) -> f64 {
+    let Some((circuit, (positive, negative, _))) = site.circuits.get(index).zip(wired.get(index)) else {
+        return 0.0;
+    };
+    let of = |conductor: &Conductor, length: Length| -> f64 {
+        least_linear_resistance(conductor, site.ambient.0).map_or(0.0, |(r, _)| {
+            let run: ElectricalResistance = r * length;
+            run.get::<ohm>()
+        })
+    };
+    let back = match circuit.way_back {
+        Return::Conductor => of(negative, circuit.negative_length),
+        Return::Chassis(_) => 0.0,
+    };
+    of(positive, circuit.positive_length) + back
+}

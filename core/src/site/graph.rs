@@ -1,0 +1,107 @@
+//! The site as trees: each bank with what hangs on it, parents before children.
+
+use alloc::collections::{BTreeMap, VecDeque};
+use alloc::vec;
+use alloc::vec::Vec;
+
+use super::model::Site;
+
+/// What a node is, by its place in the document.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Item {
+    Bank(usize),
+    Board(usize),
+    Load(usize),
+    Inverter(usize),
+}
+
+/// A node and the circuit it hangs by.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Node {
+    pub item: Item,
+    pub parent: usize,
+    /// The circuit to the parent; `None` for the root.
+    pub circuit: Option<usize>,
+    /// The circuit's `to` lies on the parent's side.
+    pub reversed: bool,
+}
+
+/// One tree, hung from a bank.
+#[derive(Clone, Debug)]
+pub(super) struct Tree {
+    pub nodes: Vec<Node>,
+}
+
+/// All items and who is joined to whom.
+pub(super) struct Graph {
+    items: Vec<Item>,
+    /// For each item: circuit, other item, and whether the circuit runs towards this item.
+    joined: Vec<Vec<(usize, usize, bool)>>,
+}
+
+impl Graph {
+    pub fn new(site: &Site) -> Self {
+        let mut items = Vec::new();
+        let mut names = BTreeMap::new();
+        let mut add = |name, item| {
+            names.insert(name, items.len());
+            items.push(item);
+        };
+        site.banks.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Bank(i)));
+        site.boards.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Board(i)));
+        site.loads.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Load(i)));
+        site.inverters.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Inverter(i)));
+
+        let mut joined = vec![Vec::new(); items.len()];
+        for (index, circuit) in site.circuits.iter().enumerate() {
+            // The reader has refused ends that do not exist.
+            let ends = names.get(circuit.from.as_str()).zip(names.get(circuit.to.as_str()));
+            let Some((&from, &to)) = ends else { continue };
+            if let Some(list) = joined.get_mut(from) {
+                list.push((index, to, false));
+            }
+            if let Some(list) = joined.get_mut(to) {
+                list.push((index, from, true));
+            }
+        }
+        Self { items, joined }
+    }
+
+    /// One tree for each group of joined items, from its first bank.
+    pub fn trees(&self) -> Vec<Tree> {
+        let mut seen = vec![false; self.items.len()];
+        let mut trees = Vec::new();
+        for (index, item) in self.items.iter().enumerate() {
+            if matches!(item, Item::Bank(_)) && !seen.get(index).copied().unwrap_or(true) {
+                trees.push(self.walk(index, &mut seen));
+            }
+        }
+        trees
+    }
+
+    /// The tree as seen from another of its banks.
+    pub fn tree_from(&self, bank: usize) -> Option<Tree> {
+        let start = self.items.iter().position(|&i| i == Item::Bank(bank))?;
+        Some(self.walk(start, &mut vec![false; self.items.len()]))
+    }
+
+    fn walk(&self, start: usize, seen: &mut [bool]) -> Tree {
+        let mut nodes = Vec::new();
+        let mut queue = VecDeque::new();
+        queue.push_back((start, 0, None, false));
+        while let Some((item_index, parent, circuit, reversed)) = queue.pop_front() {
+            let Some((item, known)) = self.items.get(item_index).zip(seen.get_mut(item_index)) else { continue };
+            if core::mem::replace(known, true) {
+                continue;
+            }
+            let own = nodes.len();
+            nodes.push(Node { item: *item, parent, circuit, reversed });
+            for &(circuit, other, towards) in self.joined.get(item_index).into_iter().flatten() {
+                if !seen.get(other).copied().unwrap_or(true) {
+                    queue.push_back((other, own, Some(circuit), towards));
+                }
+            }
+        }
+        Tree { nodes }
+    }
+}

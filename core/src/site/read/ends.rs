@@ -1,0 +1,421 @@
+//! What stands between the sections: names, ends of circuits, loops, and loads that nothing feeds.
+
+use alloc::borrow::ToOwned;
+use alloc::collections::{BTreeMap, VecDeque};
+use alloc::format;
+use alloc::string::String;
+use alloc::vec;
+use alloc::vec::Vec;
+
+use super::entry::Found;
+use super::log::{Cut, Log, Quoted, nearest};
+
+/// Circuits or loads named in one sentence, at most.
+const MOST_NAMED: usize = 8;
+
+/// Loops whose circuits are searched for; the search is linear in the circuits, so it must not be made for all.
+const MOST_LOOPS: usize = 50;
+
+/// What a name stands for.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Kind {
+    Bank,
+    Board,
+    Inverter,
+    Load,
+}
+
+impl Kind {
+    fn word(self) -> &'static str {
+        match self {
+            Self::Bank => "bank",
+            Self::Board => "board",
+            Self::Inverter => "inverter",
+            Self::Load => "load",
+        }
+    }
+
+    fn draws(self) -> bool {
+        matches!(self, Self::Inverter | Self::Load)
+    }
+}
+
+/// Something a circuit may end at.
+pub(super) struct Node<'d> {
+    kind: Kind,
+    name: &'d str,
+    at: usize,
+}
+
+impl<'d> Node<'d> {
+    /// `None` where the section states no name: that is reported with its section.
+    pub(super) fn of(kind: Kind, found: Found<'d>) -> Option<Self> {
+        let (name, _) = text_of(found, "name")?;
+        Some(Self { kind, name, at: found.at })
+    }
+
+    fn place(&self) -> String {
+        format!("[[{}]] {}", self.kind.word(), Quoted(self.name))
+    }
+}
+
+/// A circuit as far as its ends go.
+pub(super) struct Wire<'d> {
+    at: usize,
+    name: Option<&'d str>,
+    from: Option<(&'d str, usize)>,
+    to: Option<(&'d str, usize)>,
+    /// Whether size and device are stated, or the current where no load tells it.
+    is_stated: bool,
+}
+
+impl<'d> Wire<'d> {
+    pub(super) fn of(found: Found<'d>) -> Self {
+        let has = |key: &str| found.table.contains_key(key);
+        Self {
+            at: found.at,
+            name: text_of(found, "name").map(|(name, _)| name),
+            from: text_of(found, "from"),
+            to: text_of(found, "to"),
+            is_stated: has("size") && has("device") || has("current"),
+        }
+    }
+
+    fn place(&self) -> String {
+        self.name.map_or_else(|| "[[circuit]]".to_owned(), |name| format!("[[circuit]] {}", Quoted(name)))
+    }
+
+    fn label(&self, log: &Log) -> String {
+        self.name
+            .map_or_else(|| format!("that of line {}", log.line(self.at)), |name| format!("{}", Quoted(name)))
+    }
+}
+
+fn text_of<'d>(found: Found<'d>, key: &str) -> Option<(&'d str, usize)> {
+    let value = found.table.get(key)?;
+    value.get_ref().as_str().map(|text| (text, value.span().start))
+}
+
+/// A way from one node to another: the circuit's number and the node at its other end.
+type Way = (usize, usize);
+
+/// All nodes and circuits of a document.
+pub(super) struct Plan<'d> {
+    nodes: Vec<Node<'d>>,
+    wires: Vec<Wire<'d>>,
+}
+
+impl<'d> Plan<'d> {
+    pub(super) fn new(nodes: Vec<Node<'d>>, wires: Vec<Wire<'d>>) -> Self {
+        Self { nodes, wires }
+    }
+
+    /// Reports every problem of names, ends and ways.
+    pub(super) fn check(&self, log: &mut Log) {
+        let names = self.names(log);
+        self.check_circuit_names(log);
+        self.check_presence(log);
+        let mut ways: Vec<Vec<Way>> = vec![Vec::new(); self.nodes.len()];
+        let mut all_known = true;
+        let mut ends = Vec::with_capacity(self.wires.len());
+        for wire in &self.wires {
+            let known = self.ends(wire, &names, log);
+            all_known &= known.is_some();
+            ends.push(known);
+        }
+        self.check_ways(&ends, &mut ways, log);
+        // An end that is not known may be the feed that seems to be missing.
+        if all_known {
+            self.check_reach(&ends, log);
+        }
+    }
+
+    fn names(&self, log: &mut Log) -> BTreeMap<&'d str, usize> {
+        let mut names: BTreeMap<&str, usize> = BTreeMap::new();
+        for (index, node) in self.nodes.iter().enumerate() {
+            let first = *names.entry(node.name).or_insert(index);
+            let Some(other) = self.nodes.get(first).filter(|_| first != index) else { continue };
+            let sentence = format!(
+                "the name is taken by the {} of line {}; circuits could not tell them apart: rename one",
+                other.kind.word(),
+                log.line(other.at)
+            );
+            log.push(node.at, node.place(), sentence);
+        }
+        names
+    }
+
+    fn check_circuit_names(&self, log: &mut Log) {
+        let mut first: BTreeMap<&str, usize> = BTreeMap::new();
+        for wire in &self.wires {
+            let Some(name) = wire.name else { continue };
+            let at = *first.entry(name).or_insert(wire.at);
+            if at != wire.at {
+                let sentence =
+                    format!("the name is taken by the circuit of line {}; rename one", log.line(at));
+                log.push(wire.at, wire.place(), sentence);
+            }
+        }
+    }
+
+    fn check_presence(&self, log: &mut Log) {
+        if !self.nodes.iter().any(|node| node.kind == Kind::Bank) {
+            log.push_whole("there is no [[bank]]; write the one that feeds the site".to_owned());
+        }
+        if self.nodes.iter().any(|node| node.kind.draws()) {
+            return;
+        }
+        // Nothing draws: what is built can be inspected, but no size follows from it.
+        if self.wires.is_empty() {
+            log.push_whole(
+                "there is no [[load]] and no [[circuit]]; write what is to be fed, or what is built"
+                    .to_owned(),
+            );
+        } else if let Some(wire) = self.wires.iter().find(|wire| !wire.is_stated) {
+            let sentence = "no [[load]] is stated, so nothing tells the current to design for; \
+                            write the loads, or the size and the device that are built";
+            log.push(wire.at, wire.place(), sentence.to_owned());
+        }
+    }
+
+    /// The nodes at both ends; `None` where one is not known or not admitted.
+    fn ends(
+        &self,
+        wire: &Wire<'d>,
+        names: &BTreeMap<&'d str, usize>,
+        log: &mut Log,
+    ) -> Option<(usize, usize)> {
+        let from = Self::end(wire, "from", wire.from, names, log);
+        let to = Self::end(wire, "to", wire.to, names, log);
+        let (from, to) = (from?, to?);
+        if from == to {
+            log.push(wire.at, wire.place(), "both ends are the same; mend 'from' or 'to'".to_owned());
+            return None;
+        }
+        let source = self.nodes.get(from)?;
+        if source.kind.draws() {
+            let at = wire.from.map_or(wire.at, |(_, at)| at);
+            let sentence = format!(
+                "{} is {} {}, which feeds nothing; a circuit runs from a bank or board to what it feeds",
+                Quoted(source.name),
+                if source.kind == Kind::Inverter { "an" } else { "a" },
+                source.kind.word()
+            );
+            log.push(at, format!("{}, from", wire.place()), sentence);
+            return None;
+        }
+        Some((from, to))
+    }
+
+    fn end(
+        wire: &Wire<'d>,
+        key: &str,
+        end: Option<(&'d str, usize)>,
+        names: &BTreeMap<&'d str, usize>,
+        log: &mut Log,
+    ) -> Option<usize> {
+        let (name, at) = end?;
+        if let Some(&index) = names.get(name) {
+            return Some(index);
+        }
+        let place = format!("{}, {key}", wire.place());
+        // Searching for the nearest name is dear in a file where every end is wrong.
+        let near = if log.count() < 200 { nearest(name, names.keys().copied()) } else { None };
+        let sentence = match near {
+            Some(word) => format!("nothing is named '{}'; did you mean '{}'?", Cut(name), Cut(word)),
+            None => {
+                format!("nothing is named '{}'; name a bank, board, inverter or load of this file", Cut(name))
+            }
+        };
+        log.push(at, place, sentence);
+        None
+    }
+
+    /// Two ways to one node.
+    fn check_ways(&self, ends: &[Option<(usize, usize)>], ways: &mut [Vec<Way>], log: &mut Log) {
+        let mut groups = Groups::new(self.nodes.len());
+        let mut feeds: Vec<Option<usize>> = vec![None; self.nodes.len()];
+        let mut loops = 0_usize;
+        for (number, (wire, end)) in self.wires.iter().zip(ends).enumerate() {
+            let Some((from, to)) = *end else { continue };
+            let Some(node) = self.nodes.get(to) else { continue };
+            let feed = feeds.get(to).copied().flatten();
+            let first = feed.and_then(|first| self.wires.get(first));
+            if let Some(first) = first.filter(|_| node.kind.draws()) {
+                let sentence = format!(
+                    "{} {} is fed by circuit {} already; a load has one feed: put a board between, or take one out",
+                    node.kind.word(),
+                    Quoted(node.name),
+                    first.label(log)
+                );
+                log.push(wire.at, wire.place(), sentence);
+                continue;
+            }
+            if !groups.join(from, to) {
+                loops = loops.saturating_add(1);
+                let path = if loops <= MOST_LOOPS { path(ways, from, to) } else { Vec::new() };
+                let sentence = self.loop_sentence(node, &path, log);
+                log.push(wire.at, wire.place(), sentence);
+                continue;
+            }
+            if let Some(first) = first.filter(|_| node.kind == Kind::Board) {
+                let sentence = format!(
+                    "board {} is fed by circuit {} already; join the banks by a circuit of their own, \
+                     then feed the board from one of them",
+                    Quoted(node.name),
+                    first.label(log)
+                );
+                log.push(wire.at, wire.place(), sentence);
+                continue;
+            }
+            if let Some(feed) = feeds.get_mut(to) {
+                *feed = Some(number);
+            }
+            for (at, other) in [(from, to), (to, from)] {
+                if let Some(list) = ways.get_mut(at) {
+                    list.push((number, other));
+                }
+            }
+        }
+    }
+
+    fn loop_sentence(&self, node: &Node<'_>, path: &[usize], log: &Log) -> String {
+        let mut names: Vec<String> = path
+            .iter()
+            .take(MOST_NAMED)
+            .filter_map(|&number| self.wires.get(number))
+            .map(|wire| wire.label(log))
+            .collect();
+        let more = path.len().saturating_sub(MOST_NAMED);
+        if more > 0 {
+            names.push(format!("{more} more"));
+        }
+        let with =
+            if names.is_empty() { String::new() } else { format!(" with circuit {}", names.join(", ")) };
+        format!(
+            "it closes a loop{with}: there are two ways to {} {}; take one circuit of the loop out",
+            node.kind.word(),
+            Quoted(node.name)
+        )
+    }
+
+    /// Loads and inverters that no bank feeds.
+    fn check_reach(&self, ends: &[Option<(usize, usize)>], log: &mut Log) {
+        let mut onward: Vec<Vec<usize>> = vec![Vec::new(); self.nodes.len()];
+        let mut feed: Vec<Option<usize>> = vec![None; self.nodes.len()];
+        for &(from, to) in ends.iter().flatten() {
+            if let Some(list) = onward.get_mut(from) {
+                list.push(to);
+            }
+            if let Some(feed) = feed.get_mut(to) {
+                feed.get_or_insert(from);
+            }
+        }
+        let mut reached = vec![false; self.nodes.len()];
+        let mut queue: VecDeque<usize> = VecDeque::new();
+        for (index, node) in self.nodes.iter().enumerate() {
+            if node.kind == Kind::Bank {
+                queue.push_back(index);
+            }
+        }
+        while let Some(index) = queue.pop_front() {
+            match reached.get_mut(index) {
+                Some(seen) if !*seen => *seen = true,
+                _ => continue,
+            }
+            queue.extend(onward.get(index).into_iter().flatten());
+        }
+        let no_bank = !self.nodes.iter().any(|node| node.kind == Kind::Bank);
+        for (index, node) in self.nodes.iter().enumerate() {
+            if !node.kind.draws() || reached.get(index).copied().unwrap_or(true) {
+                continue;
+            }
+            let sentence = match feed.get(index).copied().flatten().map(|first| self.unfed(first, &feed)) {
+                None => {
+                    format!("no circuit leads to it; write a [[circuit]] with to = {}", Quoted(node.name))
+                }
+                // Without a bank nothing is fed, which was said already.
+                Some(_) if no_bank => continue,
+                Some(Some(top)) => format!(
+                    "no bank feeds it: it hangs on board {}, to which no circuit leads; write its feed",
+                    Quoted(top.name)
+                ),
+                Some(None) => "no bank feeds it: the boards before it feed each other in a ring".to_owned(),
+            };
+            log.push(node.at, node.place(), sentence);
+        }
+    }
+
+    /// The first node upstream that nothing feeds; `None` in a ring.
+    fn unfed(&self, start: usize, feed: &[Option<usize>]) -> Option<&Node<'d>> {
+        let mut index = start;
+        for _ in 0..self.nodes.len() {
+            match feed.get(index).copied().flatten() {
+                Some(before) => index = before,
+                None => return self.nodes.get(index),
+            }
+        }
+        None
+    }
+}
+
+/// The circuits of the way from one node to another, breadth first.
+fn path(ways: &[Vec<Way>], from: usize, to: usize) -> Vec<usize> {
+    let mut came: Vec<Option<Way>> = vec![None; ways.len()];
+    let mut queue = VecDeque::from([from]);
+    while let Some(index) = queue.pop_front() {
+        if index == to {
+            break;
+        }
+        for &(number, other) in ways.get(index).into_iter().flatten() {
+            match came.get_mut(other) {
+                Some(way) if way.is_none() && other != from => *way = Some((number, index)),
+                _ => continue,
+            }
+            queue.push_back(other);
+        }
+    }
+    let mut path = Vec::new();
+    let mut index = to;
+    while let Some((number, before)) = came.get(index).copied().flatten() {
+        path.push(number);
+        index = before;
+    }
+    path.reverse();
+    path
+}
+
+/// Which nodes hang together (disjoint sets with path halving).
+struct Groups(Vec<usize>);
+
+impl Groups {
+    fn new(count: usize) -> Self {
+        Self((0..count).collect())
+    }
+
+    fn top(&mut self, mut index: usize) -> usize {
+        while let Some(&above) = self.0.get(index) {
+            if above == index {
+                break;
+            }
+            let next = self.0.get(above).copied().unwrap_or(above);
+            if let Some(slot) = self.0.get_mut(index) {
+                *slot = next;
+            }
+            index = next;
+        }
+        index
+    }
+
+    /// Joins two groups; false if they were one already.
+    fn join(&mut self, one: usize, other: usize) -> bool {
+        let (one, other) = (self.top(one), self.top(other));
+        if one == other {
+            return false;
+        }
+        if let Some(slot) = self.0.get_mut(other) {
+            *slot = one;
+        }
+        true
+    }
+}

@@ -1,0 +1,85 @@
+//! What can be bought or lies on the shelf.
+
+use super::circuits::{metal, polarity, supply, terminal_range};
+use super::entry::{Entry, Found};
+use super::keys::{
+    BREAKING, CABLE, DEVICE, FAMILY, FULL_RATED, INSULATION, LENGTH, LET_THROUGH_KEY, LUG, PRICE, RATINGS,
+    SHEATHED, SIZE, STOCK, STOCK_CABLE, STOCK_DEVICE, STOCK_LUG, STUD, TERMINAL,
+};
+use super::log::Log;
+use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
+
+/// What could not be read is left out: its problems refuse the file in any case.
+pub(super) fn stock<'d>(text: &'d str, log: &mut Log, found: Found<'d>) -> Stock {
+    let mut entry = Entry::open(text, log, &STOCK, found, None);
+    let cables = entry.sections(&CABLE, &STOCK_CABLE);
+    let devices = entry.sections(&DEVICE, &STOCK_DEVICE);
+    let lugs = entry.sections(&LUG, &STOCK_LUG);
+    Stock {
+        cables: cables
+            .into_iter()
+            .filter_map(|found| cable(&mut Entry::open(text, log, &STOCK_CABLE, found, None)))
+            .collect(),
+        devices: devices
+            .into_iter()
+            .filter_map(|found| device(&mut Entry::open(text, log, &STOCK_DEVICE, found, None)))
+            .collect(),
+        lugs: lugs
+            .into_iter()
+            .filter_map(|found| lug(&mut Entry::open(text, log, &STOCK_LUG, found, None)))
+            .collect(),
+    }
+}
+
+fn cable(entry: &mut Entry<'_, '_>) -> Option<StockCable> {
+    let size = entry.parsed(&SIZE);
+    let (material, class, coating) = metal(entry);
+    let insulation = entry.parsed(&INSULATION);
+    let sheathed = entry.flag(&SHEATHED, false);
+    let length = entry.quantity(&LENGTH);
+    let price = entry.number(&PRICE);
+    Some(StockCable {
+        line: entry.line(),
+        size: size?,
+        material,
+        class,
+        coating,
+        insulation: insulation?,
+        sheathed,
+        length,
+        price,
+    })
+}
+
+fn device(entry: &mut Entry<'_, '_>) -> Option<StockDevice> {
+    let family = entry.parsed(&FAMILY);
+    let ratings = entry.quantities(&RATINGS);
+    let supply = supply(entry);
+    let breaking = entry.quantity(&BREAKING);
+    let polarity = polarity(entry);
+    let full_rated = entry.flag(&FULL_RATED, false);
+    let let_through = entry.let_through_A2s(&LET_THROUGH_KEY);
+    let terminal_range = terminal_range(entry);
+    let terminal = entry.quantity(&TERMINAL);
+    let price = entry.number(&PRICE);
+    Some(StockDevice {
+        line: entry.line(),
+        family: family?,
+        ratings,
+        supply,
+        breaking,
+        polarity,
+        full_rated,
+        let_through_A2s: let_through,
+        terminal_range,
+        terminal,
+        price,
+    })
+}
+
+fn lug(entry: &mut Entry<'_, '_>) -> Option<StockLug> {
+    let size = entry.parsed(&SIZE);
+    let stud = entry.parsed(&STUD);
+    let price = entry.number(&PRICE);
+    Some(StockLug { line: entry.line(), size: size?, stud: stud?, price })
+}

@@ -1,0 +1,234 @@
+//! The document as a whole: the top of the file, its sections, the rule set.
+
+use alloc::borrow::ToOwned;
+use alloc::format;
+use alloc::string::{String, ToString};
+use alloc::vec::Vec;
+
+use toml::Spanned;
+use toml::de::{DeTable, DeValue};
+
+use super::Problems;
+use super::circuits::Circuits;
+use super::ends::{Kind, Node, Plan, Wire};
+use super::entry::{Entry, Found, section, sections};
+use super::equipment;
+use super::keys::{
+    ALUMINIUM, ALUMINIUM_WORDS, BANK, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, DROP,
+    EARTHING, EARTHING_WORDS, ENGINE_SPACE, FORMAT, INVERTER, LATER, LOAD, OVERRIDE, RULES, RULES_OVERRIDE,
+    RULES_SECTION, SITE, SITE_AMBIENT, STOCK, Section, TOP, UNFUSED_LENGTH,
+};
+use super::log::{Cut, Log, nearest};
+use super::stock;
+use super::syntax;
+use crate::quantity::ThermodynamicTemperature;
+use crate::rules::{Overrides, Rules};
+use crate::site::model::{Earthing, Site};
+
+/// Reads a document of moderate length.
+pub(super) fn site(text: &str) -> Result<Site, Problems> {
+    let mut log = Log::new(text);
+    let blanked = syntax::blanked(text, &mut log);
+    let text = blanked.as_deref().unwrap_or(text);
+    let site = match syntax::tree(text, &mut log) {
+        Some(tree) if syntax::is_moderate(&tree, &mut log) => document(text, &tree, &mut log),
+        _ => None,
+    };
+    match site {
+        Some(site) if log.is_empty() => Ok(site),
+        _ => Err(log.into_problems()),
+    }
+}
+
+fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
+    if tree.is_empty() {
+        if log.is_empty() {
+            log.push_whole(
+                "the file states nothing; a site file begins with 'format = 1' and a section [site]"
+                    .to_owned(),
+            );
+        }
+        return None;
+    }
+    let top = Top { text, tree };
+    top.check_keys(log);
+    top.check_format(log);
+
+    let head = top.one("site", &SITE, log);
+    if head.is_none() && !tree.contains_key("site") && !log.has_broken_lines() {
+        log.push_whole(
+            "there is no section [site]; write one with name, rules, earthing and ambient".to_owned(),
+        );
+    }
+    let head = head.map(|found| head_of(&mut Entry::open(text, log, &SITE, found, None)));
+    let overrides = top.overrides(log);
+    let stock = top.one("stock", &STOCK, log).map(|found| stock::stock(text, log, found));
+
+    let banks = top.many("bank", &BANK, log);
+    let boards = top.many("board", &BOARD, log);
+    let inverters = top.many("inverter", &INVERTER, log);
+    let loads = top.many("load", &LOAD, log);
+    let circuits = top.many("circuit", &CIRCUIT, log);
+
+    // What stands on a broken line would show up again as an unknown name or a missing feed.
+    if !log.has_broken_lines() {
+        let nodes = [
+            (Kind::Bank, &banks),
+            (Kind::Board, &boards),
+            (Kind::Inverter, &inverters),
+            (Kind::Load, &loads),
+        ];
+        let nodes =
+            nodes.into_iter().flat_map(|(kind, list)| list.iter().filter_map(move |at| Node::of(kind, *at)));
+        Plan::new(nodes.collect(), circuits.iter().map(|found| Wire::of(*found)).collect()).check(log);
+    }
+
+    let banks = read_all(text, log, &BANK, &banks, equipment::bank);
+    let boards = read_all(text, log, &BOARD, &boards, equipment::board);
+    let inverters = read_all(text, log, &INVERTER, &inverters, equipment::inverter);
+    let loads = read_all(text, log, &LOAD, &loads, equipment::load);
+    let mut reader = Circuits::new(text, &circuits);
+    let circuits: Vec<_> = circuits.iter().map(|found| reader.circuit(log, *found)).collect();
+
+    let (name, rules, earthing, ambient) = head??;
+    Some(Site {
+        name,
+        rules: rules_with(rules, overrides, log)?,
+        earthing,
+        ambient,
+        banks: banks?,
+        boards: boards?,
+        inverters: inverters?,
+        loads: loads?,
+        circuits: circuits.into_iter().collect::<Option<_>>()?,
+        stock: stock.unwrap_or_default(),
+    })
+}
+
+/// Reads every section of a kind, so that the problems of all are found.
+fn read_all<'d, T>(
+    text: &'d str,
+    log: &mut Log,
+    section: &'static Section,
+    found: &[Found<'d>],
+    read: fn(&mut Entry<'d, '_>) -> Option<T>,
+) -> Option<Vec<T>> {
+    let entries: Vec<Option<T>> =
+        found.iter().map(|found| read(&mut Entry::open(text, log, section, *found, None))).collect();
+    entries.into_iter().collect()
+}
+
+type Head = (String, Rules, Earthing, (ThermodynamicTemperature, ThermodynamicTemperature));
+
+fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
+    let name = entry.name();
+    let earthing = entry.word(&EARTHING, EARTHING_WORDS);
+    let ambient: Option<(ThermodynamicTemperature, ThermodynamicTemperature)> =
+        entry.two_quantities(&SITE_AMBIENT);
+    let rules = entry.text(&RULES).and_then(|word| {
+        let rules = Rules::named(word);
+        if let Err(error) = &rules {
+            entry.problem(&RULES, error.to_string());
+        }
+        rules.ok()
+    });
+    if let Some((least, greatest)) = ambient
+        && least > greatest
+    {
+        entry.problem(
+            &SITE_AMBIENT,
+            "the least temperature is above the greatest; write the least first".to_owned(),
+        );
+        return None;
+    }
+    Some((name?, rules?, earthing?, ambient?))
+}
+
+fn rules_with(rules: Rules, overrides: Overrides, log: &mut Log) -> Option<Rules> {
+    match rules.with_overrides(overrides) {
+        Ok(rules) => Some(rules),
+        Err(error) => {
+            log.push_whole(format!("[rules.override]: {error}"));
+            None
+        }
+    }
+}
+
+/// The top of the file.
+struct Top<'d> {
+    text: &'d str,
+    tree: &'d DeTable<'d>,
+}
+
+impl<'d> Top<'d> {
+    fn check_keys(&self, log: &mut Log) {
+        for key in self.tree.keys() {
+            let name: &str = key.get_ref();
+            if TOP.iter().any(|&(known, _)| known == name) {
+                continue;
+            }
+            let at = key.span().start;
+            let sentence = if LATER.contains(&name) {
+                format!(
+                    "this version does not read [{name}] sections yet; take them out, or comment them out"
+                )
+            } else if let Some(word) = nearest(name, TOP.iter().map(|&(known, _)| known)) {
+                let meant = TOP.iter().find(|&&(known, _)| known == word).map_or("", |&(_, written)| written);
+                format!("no section '{}'; did you mean {meant}?", Cut(name))
+            } else {
+                let all: Vec<&str> = TOP.iter().map(|&(_, written)| written).collect();
+                format!("no section '{}'; at the top stand {}", Cut(name), all.join(", "))
+            };
+            log.push(at, String::new(), sentence);
+        }
+    }
+
+    fn check_format(&self, log: &mut Log) {
+        let Some(value) = self.tree.get(FORMAT.name) else {
+            if !log.has_broken_lines() {
+                log.push_whole(
+                    "key 'format' is missing; write 'format = 1' at the top of the file".to_owned(),
+                );
+            }
+            return;
+        };
+        let is_known = matches!(value.get_ref(), DeValue::Integer(number) if number.as_str() == "1");
+        if !is_known {
+            let written = Cut(self.text.get(value.span()).unwrap_or(""));
+            let sentence = format!("format {written} is not known to this version, which reads format 1");
+            log.push(value.span().start, FORMAT.name.to_owned(), sentence);
+        }
+    }
+
+    fn value(&self, name: &str) -> Option<&'d Spanned<DeValue<'d>>> {
+        self.tree.get(name)
+    }
+
+    fn one(&self, name: &str, form: &Section, log: &mut Log) -> Option<Found<'d>> {
+        section(self.text, log, self.value(name)?, form)
+    }
+
+    fn many(&self, name: &str, form: &Section, log: &mut Log) -> Vec<Found<'d>> {
+        self.value(name).map(|value| sections(self.text, log, value, form)).unwrap_or_default()
+    }
+
+    fn overrides(&self, log: &mut Log) -> Overrides {
+        let Some(rules) = self.one("rules", &RULES_SECTION, log) else { return Overrides::default() };
+        // Opened for its keys: under [rules] stands nothing but the overrides.
+        Entry::open(self.text, log, &RULES_SECTION, rules, None);
+        let Some(value) = rules.table.get(OVERRIDE.name) else { return Overrides::default() };
+        let Some(found) = section(self.text, log, value, &RULES_OVERRIDE) else {
+            return Overrides::default();
+        };
+        let mut entry = Entry::open(self.text, log, &RULES_OVERRIDE, found, None);
+        Overrides {
+            continuous_factor: entry.number(&CONTINUOUS_FACTOR),
+            drop: entry.quantity(&DROP),
+            unfused: entry.quantity(&UNFUSED_LENGTH),
+            engine_space: entry.number(&ENGINE_SPACE),
+            bundling: entry.number(&BUNDLING),
+            device_ratio: entry.number(&DEVICE_RATIO),
+            aluminium: entry.word(&ALUMINIUM, ALUMINIUM_WORDS),
+        }
+    }
+}

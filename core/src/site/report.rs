@@ -1,0 +1,367 @@
+//! The report as data: what was found and designed, with its reasons. [`super::text`] turns it into words.
+
+use alloc::format;
+use alloc::string::{String, ToString};
+use alloc::vec::Vec;
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::length::meter;
+use uom::si::thermodynamic_temperature::degree_celsius;
+
+use super::finding::{Finding, Severity, digits};
+use super::graph::Item;
+use super::model::{CircuitEntry, Site};
+use super::plan::{Fitted, Plan, Planned, Reason, plan};
+use super::read::Problems;
+use super::wiring::{findings, name_of, stud_of};
+use crate::cable::Conductor;
+use crate::circuit::{Judgement, Run};
+use crate::citation::Seen;
+use crate::protection::{End, Guard};
+use crate::quantity::{ConductorSize, ElectricCurrent};
+use crate::rules::practice_figure;
+
+/// One device of a circuit.
+#[derive(Clone, Debug)]
+pub struct DeviceLine {
+    /// Name.
+    pub name: String,
+    /// The device.
+    pub guard: Guard,
+    /// End it guards.
+    pub end: End,
+    /// Name of what stands at that end.
+    pub at: String,
+    /// Whether family or rating were chosen here.
+    pub designed: bool,
+    /// Greatest prospective current it must interrupt, where known.
+    pub greatest_fault: Option<ElectricCurrent>,
+}
+
+/// One circuit of the report.
+#[derive(Clone, Debug)]
+pub struct CircuitLine {
+    /// Name.
+    pub name: String,
+    /// Name of its beginning.
+    pub from: String,
+    /// Name of its end.
+    pub to: String,
+    /// Positive conductor.
+    pub positive: Conductor,
+    /// Negative conductor.
+    pub negative: Conductor,
+    /// Whether the size was chosen here.
+    pub designed: bool,
+    /// The task the checks were made for.
+    pub run: Run,
+    /// What was found.
+    pub judgement: Judgement,
+    /// Devices; the one at the source's end first.
+    pub devices: Vec<DeviceLine>,
+    /// Smaller sizes, each with the reason it was not taken.
+    pub refused: Vec<(ConductorSize, String)>,
+    /// What decided the size, or uses most of its limit where it is stated.
+    pub governing: String,
+    /// Name of the circuit whose device guards this one from further up.
+    pub guarded_by: Option<String>,
+    /// Remark on a figure of common practice for this conductor, where there is one.
+    pub practice: Option<String>,
+}
+
+/// One line of what to buy.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Purchase {
+    /// How much: metres of single conductor, or pieces.
+    pub amount: f64,
+    /// `m` or `pcs`.
+    pub unit: &'static str,
+    /// What.
+    pub what: String,
+    /// Where it goes.
+    pub places: Vec<String>,
+    /// Price of all of it, where the stock states one.
+    pub price: Option<f64>,
+}
+
+/// The whole report.
+#[derive(Clone, Debug)]
+pub struct Report {
+    /// Name of the site.
+    pub name: String,
+    /// Rule set and editions.
+    pub edition: String,
+    /// The user's own values in place of the rule set's.
+    pub overrides: Vec<String>,
+    /// Banks and surroundings, one line each.
+    pub system: Vec<String>,
+    /// Circuits, in the order of the document.
+    pub circuits: Vec<CircuitLine>,
+    /// Findings, gravest first.
+    pub findings: Vec<Finding>,
+    /// What to buy for what was designed.
+    pub purchases: Vec<Purchase>,
+    /// What was taken where the document says nothing.
+    pub assumptions: Vec<String>,
+    /// Sources of which nobody has seen the page.
+    pub recalled: Vec<String>,
+    /// What lies outside this report.
+    pub not_covered: Vec<String>,
+}
+
+impl Report {
+    /// 0 where nothing stands against the site, 1 with any danger, nonconformity or check not made.
+    pub fn exit_code(&self) -> u8 {
+        u8::from(self.findings.iter().any(|f| f.severity != Severity::Advice))
+    }
+
+    /// Number of findings of a severity.
+    pub fn count(&self, severity: Severity) -> usize {
+        self.findings.iter().filter(|f| f.severity == severity).count()
+    }
+}
+
+/// Designs what the document leaves out, checks what it states, and reports both.
+///
+/// # Errors
+/// [`Problems`] where the parts on offer cannot serve a circuit, each with its line and remedy.
+///
+/// # Example
+/// ```
+/// use ampwright::site::{inspect, read};
+/// let site = read(include_str!("../../examples/sites/heron_point.toml")).map_err(|p| p.to_string())?;
+/// let report = inspect(&site).map_err(|p| p.to_string())?;
+/// assert!(report.to_string().contains("bank main"));
+/// # Ok::<(), String>(())
+/// ```
+pub fn inspect(site: &Site) -> Result<Report, Problems> {
+    let plan = plan(site)?;
+    let circuits: Vec<CircuitLine> = site
+        .circuits
+        .iter()
+        .zip(&plan.circuits)
+        .filter_map(|(circuit, planned)| planned.as_ref().map(|p| line_of(site, circuit, p)))
+        .collect();
+    Ok(Report {
+        name: site.name.clone(),
+        edition: site.rules.set().edition.to_string(),
+        overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
+        system: system(site),
+        findings: findings(site, &plan),
+        purchases: purchases(site, &plan),
+        assumptions: assumptions(site, &plan),
+        recalled: recalled(&circuits),
+        not_covered: not_covered(site),
+        circuits,
+    })
+}
+
+fn line_of(site: &Site, circuit: &CircuitEntry, planned: &Planned) -> CircuitLine {
+    let name = |index: usize| site.circuits.get(index).map_or_else(String::new, |c| c.name.clone());
+    let reason = |reason: &Reason| match reason {
+        Reason::Check(checked) => checked.to_string(),
+        Reason::Error(error) => error.to_string(),
+        Reason::Path(checked, other) => format!("path to \"{}\": {checked}", name(*other)),
+    };
+    let governing = match (planned.designed(), planned.refused.last()) {
+        (true, Some(last)) => format!("{} was refused: {}", last.size, reason(&last.by)),
+        (true, None) => "the smallest on offer passes".to_string(),
+        (false, _) => planned
+            .judgement
+            .first_failure()
+            .or_else(|| planned.judgement.tightest())
+            .map_or_else(|| "no check with a limit was made".to_string(), ToString::to_string),
+    };
+    CircuitLine {
+        name: circuit.name.clone(),
+        from: circuit.from.clone(),
+        to: circuit.to.clone(),
+        positive: planned.positive,
+        negative: planned.negative,
+        designed: planned.designed(),
+        run: planned.run,
+        judgement: planned.judgement.clone(),
+        devices: planned.fitted.iter().map(|f| device_line(circuit, planned, f)).collect(),
+        refused: planned.refused.iter().map(|r| (r.size, reason(&r.by))).collect(),
+        governing,
+        guarded_by: planned.guarded_by.map(name),
+        practice: practice_figure(planned.positive.size, planned.positive.insulation.rating_degC()).map(|p| {
+            let table = planned.judgement.ampacity.as_ref().map_or(f64::NAN, |a| a.base.value);
+            format!(
+                "common practice gives {} A for this conductor ({}); the rule set's table gives {} A, {:+.1} %",
+                digits(p.amps),
+                p.words,
+                digits(table),
+                (table / p.amps - 1.0) * 100.0
+            )
+        }),
+    }
+}
+
+fn device_line(circuit: &CircuitEntry, planned: &Planned, fitted: &Fitted) -> DeviceLine {
+    let first = planned.fitted.first().is_some_and(|f| f.end == fitted.end);
+    DeviceLine {
+        name: fitted.name.clone(),
+        guard: fitted.guard,
+        end: fitted.end,
+        at: if fitted.end == End::From { circuit.from.clone() } else { circuit.to.clone() },
+        designed: fitted.designed,
+        greatest_fault: if first { planned.flow.fault_at_beginning } else { planned.flow.fault_at_end },
+    }
+}
+
+fn system(site: &Site) -> Vec<String> {
+    let mut lines: Vec<String> = site
+        .banks
+        .iter()
+        .map(|b| {
+            format!(
+                "bank \"{}\": {} {} V, {} Ah, from {} V at cut-off to {} V at its highest",
+                b.name,
+                b.chemistry,
+                digits(b.nominal.get::<volt>()),
+                digits(b.capacity.get::<uom::si::electric_charge::ampere_hour>()),
+                digits(b.cut_off.get::<volt>()),
+                digits(b.highest.get::<volt>())
+            )
+        })
+        .collect();
+    let earth = site.rules.set().terms.earth;
+    lines.push(match site.earthing {
+        super::model::Earthing::Negative => format!("negative pole to {earth} at one point"),
+        super::model::Earthing::Positive => format!("positive pole to {earth} at one point"),
+        super::model::Earthing::Floating => format!("neither pole to {earth}"),
+    });
+    lines.push(format!(
+        "ambient {} to {} °C",
+        digits(site.ambient.0.get::<degree_celsius>()),
+        digits(site.ambient.1.get::<degree_celsius>())
+    ));
+    lines
+}
+
+/// What to buy for what was designed: conductor by the metre, devices by the piece.
+fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
+    let mut list: Vec<Purchase> = Vec::new();
+    let mut add = |amount: f64, unit: &'static str, what: String, place: &str, each: Option<f64>| {
+        let price = each.map(|p| p * amount);
+        match list.iter_mut().find(|p| p.what == what && p.unit == unit) {
+            Some(line) => {
+                line.amount += amount;
+                line.places.push(place.to_string());
+                line.price = line.price.zip(price).map(|(a, b)| a + b);
+            }
+            None => list.push(Purchase { amount, unit, what, places: alloc::vec![place.to_string()], price }),
+        }
+    };
+    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+        let Some(planned) = planned else { continue };
+        if planned.designed() {
+            let metres = circuit.positive_length.get::<meter>() + circuit.negative_length.get::<meter>();
+            let price = site
+                .stock
+                .cables
+                .iter()
+                .find(|c| c.size == planned.positive.size && c.insulation == planned.positive.insulation)
+                .and_then(|c| c.price);
+            add(metres, "m", super::text::conductor_words(&planned.positive), &circuit.name, price);
+        }
+        for fitted in planned.fitted.iter().filter(|f| f.designed) {
+            let device = fitted.guard.device;
+            let price = site.stock.devices.iter().find(|d| d.family == device.family).and_then(|d| d.price);
+            add(1.0, "pcs", super::text::device_words(&fitted.guard), &circuit.name, price);
+        }
+        if planned.designed() {
+            for (name, lug) in [(&circuit.from, circuit.from_lug), (&circuit.to, circuit.to_lug)] {
+                let stud = plan
+                    .trees
+                    .iter()
+                    .flat_map(|t| t.nodes.iter().map(|n| n.item))
+                    .find(|&i: &Item| name_of(site, i) == name)
+                    .and_then(|i| stud_of(site, i));
+                if let Some(stud) = lug.or(stud) {
+                    let price = site
+                        .stock
+                        .lugs
+                        .iter()
+                        .find(|l| l.size == planned.positive.size && l.stud == stud)
+                        .and_then(|l| l.price);
+                    add(2.0, "pcs", format!("lug {} for {}", stud, planned.positive.size), &circuit.name, price);
+                }
+            }
+        }
+    }
+    list
+}
+
+fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
+    let mut lines = Vec::new();
+    let names = |pick: &dyn Fn(&CircuitEntry) -> bool| {
+        let names: Vec<&str> = site.circuits.iter().filter(|c| pick(c)).map(|c| c.name.as_str()).collect();
+        names.join(", ")
+    };
+    let usual = site.rules.usual_installation();
+    let plain = names(&|c| c.installed.is_none());
+    if !plain.is_empty() {
+        lines.push(format!("installed as {}: {plain}", super::text::installation_word(usual)));
+    }
+    let bare = names(&|c| c.insulation.is_none() && c.size.is_some());
+    if !bare.is_empty() {
+        lines.push(format!("insulation {}: {bare}", site.rules.usual_insulation()));
+    }
+    let lugs = names(&|c| c.joints.is_empty());
+    if !lugs.is_empty() {
+        lines.push(format!("four crimped lugs of 0.1 mΩ (generic, common practice): {lugs}"));
+    }
+    if let Some(usual) = site.rules.unmarked_terminal_degC() {
+        let unmarked = names(&|c| c.terminal.is_none());
+        if !unmarked.is_empty() {
+            lines.push(format!("terminals without mark taken for {} °C: {unmarked}", digits(usual)));
+        }
+    }
+    if plan.circuits.iter().flatten().any(|p| p.fitted.iter().any(|f| f.designed)) {
+        lines.push(
+            "devices designed here sit at the source's end, within the unprotected length of the rule set, in every \
+             pole that is not earthed"
+                .to_string(),
+        );
+    }
+    if site.circuits.iter().any(|c| (c.diversity - 1.0).abs() > f64::EPSILON) {
+        lines.push(format!("the user's own diversity: {}", names(&|c| (c.diversity - 1.0).abs() > f64::EPSILON)));
+    }
+    lines.push(
+        "worst hour: every load at once, bank at cut-off, constant-power loads solved at the volts that reach them; \
+         resistive loads at the highest voltage"
+            .to_string(),
+    );
+    lines
+}
+
+/// Sources used that nobody has seen.
+fn recalled(circuits: &[CircuitLine]) -> Vec<String> {
+    let mut lines: Vec<String> = Vec::new();
+    for circuit in circuits {
+        let factors = circuit.judgement.ampacity.iter().flat_map(|a| a.factors.iter().map(|f| f.citation));
+        let checks = circuit.judgement.checks.iter().map(|c| c.citation);
+        for citation in checks.chain(factors).filter(|c| c.seen == Seen::Recalled) {
+            let line = format!("{}, {}", citation.document, citation.place);
+            if !lines.contains(&line) {
+                lines.push(line);
+            }
+        }
+    }
+    lines
+}
+
+fn not_covered(site: &Site) -> Vec<String> {
+    let mut lines = Vec::new();
+    for inverter in &site.inverters {
+        lines.push(format!("everything beyond the AC terminals of inverter \"{}\"", inverter.name));
+    }
+    lines.push(
+        "size of bank and array, charging, ventilation, lightning and protective conductors: not part of this report"
+            .to_string(),
+    );
+    lines
+}
