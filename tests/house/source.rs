@@ -71,9 +71,11 @@ pub fn string_literals(tokens: &[TokenTree]) -> Vec<String> {
             }
             TokenTree::Group(g) => {
                 let inner = inside(g);
-                let doc = i > 0
-                    && is_punct(tokens.get(i - 1), '#')
-                    && ident(inner.first()).as_deref() == Some("doc");
+                // `#[doc…]` for an item, `#![doc…]` for the module itself.
+                let before = tokens.get(..i).unwrap_or_default().iter().rev();
+                let attribute =
+                    before.take_while(|t| is_punct(Some(t), '!') || is_punct(Some(t), '#')).count() > 0;
+                let doc = attribute && ident(inner.first()).as_deref() == Some("doc");
                 if !doc {
                     found.extend(string_literals(&inner));
                 }
@@ -86,7 +88,8 @@ pub fn string_literals(tokens: &[TokenTree]) -> Vec<String> {
 
 #[test]
 fn tests_and_docs_are_left_out_of_the_literals() {
-    let source = r#"/// a doc
+    let source = r#"//! the module's doc
+        /// a doc
         #[error("an error")] fn f() { g("a message") }
         #[cfg(test)] mod tests { const X: &str = "a test"; }"#;
     assert_eq!(string_literals(&tokens("sample", source)), [r#""an error""#, r#""a message""#]);
