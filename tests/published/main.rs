@@ -3,6 +3,6 @@ mod conductors;
 mod devices;
 
 mod ampacity;
-mod protection_rules;
 mod law;
 mod practice;
+mod protection_rules;

@@ -200,12 +200,11 @@ impl Facts<'_> {
     }
 
     pub fn drop(&self, path_drop: Ratio) -> Checked {
-        let (limit, citation) = match self.run.drop {
-            Some(stated) => (stated, Citation::new("the site file", "drop", Seen::Stated)),
-            None => {
-                let limit = self.run.rules.drop_limit(self.run.usage);
-                (limit.ratio, limit.citation)
-            }
+        let (limit, citation) = if let Some(stated) = self.run.drop {
+            (stated, Citation::new("the site file", "drop", Seen::Stated))
+        } else {
+            let limit = self.run.rules.drop_limit(self.run.usage);
+            (limit.ratio, limit.citation)
         };
         Checked::at_most(
             Check::Drop,

@@ -159,7 +159,7 @@ impl Run {
                 within("other current", other.get::<ampere>(), "A", current)?;
             }
             Demand::Power { power, .. } => {
-                within("power", power.get::<watt>(), "W", Allowed::Between(0.0, 1e8))?
+                within("power", power.get::<watt>(), "W", Allowed::Between(0.0, 1e8))?;
             }
         }
         within("ambient", self.ambient.get::<degree_celsius>(), "degC", Allowed::Between(-80.0, 200.0))?;

@@ -142,8 +142,7 @@ fn fold(tree: &[TreeNode], states: &mut [NodeState], root_ohm: f64, with_power: 
         }
         if with_power && node.load.power.value > 0.0 {
             let watts = node.load.power.value;
-            // Written so that NaN fails too.
-            if !(volts > 0.0) {
+            if volts.is_nan() || volts <= 0.0 {
                 return Err(Error::Collapse { node: index, asked_W: watts });
             }
             a += 2.0 * watts / volts;
@@ -156,7 +155,7 @@ fn fold(tree: &[TreeNode], states: &mut [NodeState], root_ohm: f64, with_power: 
         let ohms = if index == 0 { root_ohm } else { node.resistance.value };
         let (a, g) = state.here;
         let pivot = 1.0 + g * ohms;
-        if !(pivot > 0.0) {
+        if pivot.is_nan() || pivot <= 0.0 {
             return Err(Error::Collapse { node: index, asked_W: node.load.power.get::<watt>() });
         }
         let above = (a / pivot, g / pivot);

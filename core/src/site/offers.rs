@@ -92,7 +92,7 @@ impl Offers {
             .devices
             .iter()
             .map(|d| {
-                let mut ratings: Vec<f64> = d.ratings.iter().map(|r| r.get::<ampere>()).collect();
+                let mut ratings: Vec<f64> = d.ratings.iter().map(ElectricCurrent::get::<ampere>).collect();
                 ratings.sort_by(f64::total_cmp);
                 OwnedOffer {
                     family: d.family,
@@ -139,18 +139,16 @@ impl Offers {
             coating: circuit.coating,
             insulation,
         };
-        let (positive, negative, offered) = match circuit.size {
-            Some(size) => (stated(size), stated(circuit.negative_size.unwrap_or(size)), None),
-            None => {
-                let Some(first) = self.sizes.first() else {
-                    return Err(Problem {
-                        line: circuit.line,
-                        place: format!("[[circuit]] \"{}\"", circuit.name),
-                        text: "no conductor is on offer; add [[stock.cable]] or state size".to_string(),
-                    });
-                };
-                (*first, *first, Some(0))
-            }
+        let (positive, negative, offered) = if let Some(size) = circuit.size {
+            (stated(size), stated(circuit.negative_size.unwrap_or(size)), None)
+        } else if let Some(first) = self.sizes.first() {
+            (*first, *first, Some(0))
+        } else {
+            return Err(Problem {
+                line: circuit.line,
+                place: format!("[[circuit]] \"{}\"", circuit.name),
+                text: "no conductor is on offer; add [[stock.cable]] or state size".to_string(),
+            });
         };
         Ok(Draft { positive, negative, offered, refused: Vec::new(), joints: joints(circuit, &[]) })
     }

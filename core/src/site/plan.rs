@@ -126,11 +126,9 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         let conductors: Vec<(Conductor, Conductor, ElectricalResistance)> =
             drafts.iter().map(|d| (d.positive, d.negative, d.joints)).collect();
         let flows = Flows::new(site, &graph, &trees, &conductors, &temperatures);
-        if let Some(enlarged) = relieve_collapse(&flows, &trees, &mut drafts, &offers) {
-            if enlarged {
-                settled = false;
-                continue;
-            }
+        if relieve_collapse(&flows, &trees, &mut drafts, &offers) {
+            settled = false;
+            continue;
         }
         let planned = match judge_all(site, &trees, &offers, &drafts, &feeding, &flows) {
             Ok(planned) => planned,
@@ -160,38 +158,24 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
     ))
 }
 
-/// Where the network collapses: enlarges the designed run of the greatest resistance on the path. `None` where
-/// nothing collapsed; `false` where nothing on the path can grow.
-fn relieve_collapse(flows: &Flows, trees: &[Tree], drafts: &mut [Draft], offers: &Offers) -> Option<bool> {
-    let (tree, node, error) = flows.collapse?;
+/// Where the network collapses: enlarges the designed run of the greatest resistance on the path; `false` where nothing
+/// collapsed, or nothing on the path can grow.
+fn relieve_collapse(flows: &Flows, trees: &[Tree], drafts: &mut [Draft], offers: &Offers) -> bool {
+    let Some((tree, node, error)) = flows.collapse else { return false };
     let path = trees.get(tree).map(|t| path_to(t, node)).unwrap_or_default();
-    Some(grow_worst(&path, drafts, offers, |_, flow_ohms| flow_ohms, flows, Reason::Error(error)))
-}
-
-/// Enlarges the circuit of a path that scores highest; ties go to the one nearest the source.
-fn grow_worst(
-    path: &[usize],
-    drafts: &mut [Draft],
-    offers: &Offers,
-    score: impl Fn(usize, f64) -> f64,
-    flows: &Flows,
-    reason: Reason,
-) -> bool {
     let mut worst: Option<(usize, f64)> = None;
-    for &circuit in path {
-        let grows = drafts
-            .get(circuit)
-            .and_then(|d| d.offered)
-            .is_some_and(|offered| offered + 1 < offers.sizes.len());
-        let value = score(circuit, flows.circuits.get(circuit).map_or(0.0, |f| f.ohms));
-        if grows && worst.is_none_or(|(_, most)| value > most) {
-            worst = Some((circuit, value));
+    for &circuit in &path {
+        let ohms = flows.circuits.get(circuit).map_or(0.0, |f| f.ohms);
+        if can_grow(drafts, offers, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
+            worst = Some((circuit, ohms));
         }
     }
-    match worst {
-        Some((circuit, _)) => grow(circuit, drafts, offers, reason),
-        None => false,
-    }
+    worst.is_some_and(|(circuit, _)| grow(circuit, drafts, offers, Reason::Error(error)))
+}
+
+/// Whether a circuit is designed and a larger size is on offer.
+fn can_grow(drafts: &[Draft], offers: &Offers, circuit: usize) -> bool {
+    drafts.get(circuit).and_then(|d| d.offered).is_some_and(|offered| offered + 1 < offers.sizes.len())
 }
 
 /// Takes the next size on offer; `false` where there is none.
@@ -265,7 +249,7 @@ fn judge_all(
                 site,
                 offers,
                 &planned,
-                Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream },
+                &Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream },
             )
             .map_err(|error| Problem {
                 line: circuit.line,
@@ -294,9 +278,9 @@ fn judge_one(
     site: &Site,
     offers: &Offers,
     planned: &[Option<Planned>],
-    task: Task<'_>,
+    task: &Task<'_>,
 ) -> Result<Planned, Error> {
-    let Task { index, circuit, draft, ends, flow, reversed, upstream } = task;
+    let &Task { index, circuit, draft, ends, flow, reversed, upstream } = task;
     let run = run_of(site, circuit, draft, &flow);
     let bare = judge(&run, &draft.positive, &draft.negative, None)?;
     // The device at the end that the source feeds comes first; further ones see their own fault currents.
@@ -505,11 +489,7 @@ fn enlarge(
                 }
                 let mut worst: Option<(usize, f64)> = None;
                 for &c in &path {
-                    let grows = drafts
-                        .get(c)
-                        .and_then(|d| d.offered)
-                        .is_some_and(|offered| offered + 1 < offers.sizes.len());
-                    if grows && worst.is_none_or(|(_, most)| own_drop(c) > most) {
+                    if can_grow(drafts, offers, c) && worst.is_none_or(|(_, most)| own_drop(c) > most) {
                         worst = Some((c, own_drop(c)));
                     }
                 }

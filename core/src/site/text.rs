@@ -2,7 +2,7 @@
 
 use alloc::format;
 use alloc::string::{String, ToString};
-use core::fmt;
+use core::fmt::{self, Write as _};
 
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
@@ -162,9 +162,15 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         let mut words =
             format!("{} A ({}, column {}, {})", digits(a.base.value), a.base.citation, a.column, a.row);
         for factor in &a.factors {
-            words.push_str(&format!(" × {} {}", factor.value, factor.name));
+            {
+                // Writing to a String cannot fail.
+                let _ = write!(words, " × {} {}", factor.value, factor.name);
+            }
         }
-        words.push_str(&format!(" = {} A", digits(a.corrected.get::<ampere>())));
+        {
+            // Writing to a String cannot fail.
+            let _ = write!(words, " = {} A", digits(a.corrected.get::<ampere>()));
+        }
         row(f, "capacity", &words)?;
     }
     if let Some(remark) = &c.practice {
@@ -292,12 +298,18 @@ pub(super) fn device_words(guard: &Guard) -> String {
     let device = guard.device;
     let mut words = format!("{} {} A", device.family, digits(device.rating.get::<ampere>()));
     match device.supply {
-        Supply::Dc(rated) => words.push_str(&format!(", {} V DC", digits(rated.get::<volt>()))),
+        Supply::Dc(rated) => {
+            // Writing to a String cannot fail.
+            let _ = write!(words, ", {} V DC", digits(rated.get::<volt>()));
+        }
         Supply::AcOnly => words.push_str(", AC only"),
         Supply::NotStated => words.push_str(", DC voltage not stated"),
     }
     match device.breaking {
-        Some(amps) => words.push_str(&format!(", breaks {} kA", digits(amps.get::<ampere>() / 1000.0))),
+        Some(amps) => {
+            // Writing to a String cannot fail.
+            let _ = write!(words, ", breaks {} kA", digits(amps.get::<ampere>() / 1000.0));
+        }
         None => words.push_str(", breaking capacity not stated"),
     }
     if device.polarity == Polarity::Marked {

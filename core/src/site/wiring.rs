@@ -224,7 +224,6 @@ impl Place<'_> {
                 format!("{} m of conductor without protection, at most {} m", digits(actual), digits(limit.value.get::<meter>())),
                 Some(limit.citation), "move the device towards the source",
             ),
-            (Some(_), Some(_)) => {}
             (Some(actual), None) if actual > 0.0 => found.add(
                 Severity::NotChecked, "R7", "device-distance-not-limited", place, line,
                 format!("check not made: {} m of conductor without protection, and the rule set holds no length for this case", digits(actual)),
@@ -237,7 +236,7 @@ impl Place<'_> {
                 "check not made: conductor length between the bank and the device; state from_source".to_string(),
                 None, "",
             ),
-            (Some(_), None) => {}
+            (Some(_), _) => {}
         }
     }
 
