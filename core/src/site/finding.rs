@@ -117,12 +117,9 @@ const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'stati
             Severity::Nonconforming,
             "use larger conductors on its path, or a soft start",
         ),
-        Check::Breaking => (
-            "R6",
-            "breaking-capacity-too-low",
-            Severity::Danger,
-            "use a device with a higher breaking capacity on DC",
-        ),
+        Check::Breaking => {
+            ("R6", "breaking-capacity-too-low", Severity::Danger, "use a device that interrupts more on DC")
+        }
         Check::LeastFault => (
             "R6",
             "least-fault-too-small",

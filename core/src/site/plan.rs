@@ -344,6 +344,7 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
     let continuous = current * Ratio::new::<ratio>(flow.continuous_share);
     Run {
         rules: site.rules,
+        earthing: site.earthing,
         nominal: ElectricPotential::new::<volt>(flow.nominal),
         highest: ElectricPotential::new::<volt>(flow.highest),
         beginning: ElectricPotential::new::<volt>(flow.beginning),

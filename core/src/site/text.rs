@@ -297,21 +297,19 @@ pub(super) fn conductor_words(conductor: &Conductor) -> String {
 pub(super) fn device_words(guard: &Guard) -> String {
     let device = guard.device;
     let mut words = format!("{} {} A", device.family, digits(device.rating.get::<ampere>()));
-    match device.supply {
-        Supply::Dc(rated) => {
-            // Writing to a String cannot fail.
-            let _ = write!(words, ", {} V DC", digits(rated.get::<volt>()));
+    // Writing to a String cannot fail.
+    let _ = match device.supply {
+        Supply::Dc(rated) => write!(words, ", {} V DC", digits(rated.get::<volt>())),
+        Supply::PerPole(each, poles) => {
+            write!(words, ", {poles} poles of {} V DC", digits(each.get::<volt>()))
         }
-        Supply::AcOnly => words.push_str(", AC only"),
-        Supply::NotStated => words.push_str(", DC voltage not stated"),
-    }
-    match device.breaking {
-        Some(amps) => {
-            // Writing to a String cannot fail.
-            let _ = write!(words, ", breaks {} kA", digits(amps.get::<ampere>() / 1000.0));
-        }
-        None => words.push_str(", breaking capacity not stated"),
-    }
+        Supply::AcOnly => write!(words, ", AC only"),
+        Supply::NotStated => write!(words, ", DC voltage not stated"),
+    };
+    let _ = match device.breaking {
+        Some(amps) => write!(words, ", breaks {} kA", digits(amps.get::<ampere>() / 1000.0)),
+        None => write!(words, ", what it breaks on DC not stated"),
+    };
     if device.polarity == Polarity::Marked {
         words.push_str(", polarity marked");
     }

@@ -373,7 +373,7 @@ impl Place<'_> {
                     None,
                     "use a part rated for DC",
                 ),
-                Supply::Dc(rated) if rated.get::<volt>() < highest => found.add(
+                Supply::Dc(rated) | Supply::PerPole(rated, _) if rated.get::<volt>() < highest => found.add(
                     Severity::Danger,
                     "R6",
                     "part-voltage-too-low",
@@ -393,7 +393,7 @@ impl Place<'_> {
                     None,
                     "",
                 ),
-                Supply::Dc(_) => {}
+                Supply::Dc(_) | Supply::PerPole(..) => {}
             }
         }
     }
