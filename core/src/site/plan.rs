@@ -362,7 +362,7 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
         space: circuit.space,
         ambient: circuit.ambient.unwrap_or(site.ambient.1),
         bundled_conductors: circuit.bundled,
-        moving: circuit.moving,
+        moving: circuit.moving || flow.at_bank,
         terminal: lowest(circuit.terminal, flow.load_terminal),
         usage: flow.usage,
         drop: circuit.drop,
