@@ -101,7 +101,7 @@ const SETTLED: f64 = 1e-14;
 /// };
 /// let mut state = [NodeState::default(); 4];
 /// solve(source, &tree, &mut state)?;
-/// assert!((state[2].voltage.get::<volt>() - 23.8825).abs() < 1e-4);
+/// assert!((state[2].voltage.get::<volt>() - 23.8828).abs() < 1e-4);
 /// # Ok::<(), ampwright::Error>(())
 /// ```
 pub fn solve(root: Source, tree: &[TreeNode], states: &mut [NodeState]) -> Result<u32, Error> {

@@ -32,7 +32,7 @@ impl Rules {
     /// [`Error::TableEnds`], [`Error::NotTabulated`], [`Error::OutOfRange`].
     ///
     /// # Source
-    /// The set's tables: [`super::RuleSet::ampacity_tables`], [`super::RuleSet::factor_tables`].
+    /// The set's tables: [`crate::rules::RuleSet::ampacity_tables`], [`crate::rules::RuleSet::factor_tables`].
     ///
     /// # Example
     /// Nine current-carrying 12 AWG conductors of 90 °C insulation in one conduit at 30 °C: 30 A × 0.7.

@@ -38,6 +38,8 @@ pub(super) struct Flow {
     /// Nominal and highest voltage of its bank, V.
     pub nominal: f64,
     pub highest: f64,
+    /// A bank stands at one of its ends: a battery cable.
+    pub at_bank: bool,
     /// A bank hangs at the far end or beyond it.
     pub between_sources: bool,
     /// Of what hangs at the far end.
@@ -153,6 +155,8 @@ impl Flows {
             flow.highest = highest;
             flow.ohms = ohms(index);
             flow.between_sources = bank;
+            let above = tree.nodes.get(node.parent).map(|p| p.item);
+            flow.at_bank = [above, Some(node.item)].iter().any(|i| matches!(i, Some(Item::Bank(_))));
             // Where nothing is known of the use (bank to bank), all of it counts as continuous.
             flow.continuous_share = if whole > 0.0 { continuous / whole } else { 1.0 };
             match node.item {
@@ -273,6 +277,7 @@ const fn none() -> Flow {
         ohms: 0.0,
         nominal: 0.0,
         highest: 0.0,
+        at_bank: false,
         between_sources: false,
         usage: LoadUse::Other,
         least_voltage: None,

@@ -344,6 +344,7 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
     let continuous = current * Ratio::new::<ratio>(flow.continuous_share);
     Run {
         rules: site.rules,
+        earthing: site.earthing,
         nominal: ElectricPotential::new::<volt>(flow.nominal),
         highest: ElectricPotential::new::<volt>(flow.highest),
         beginning: ElectricPotential::new::<volt>(flow.beginning),
@@ -361,7 +362,7 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
         space: circuit.space,
         ambient: circuit.ambient.unwrap_or(site.ambient.1),
         bundled_conductors: circuit.bundled,
-        moving: circuit.moving,
+        moving: circuit.moving || flow.at_bank,
         terminal: lowest(circuit.terminal, flow.load_terminal),
         usage: flow.usage,
         drop: circuit.drop,
