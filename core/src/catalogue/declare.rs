@@ -106,6 +106,7 @@ macro_rules! calculations {
                 /// The formula alone, for inputs that are checked.
                 #[inline(always)]
                 #[allow(clippy::inline_always, reason = "array loops become vector code only with the formula in them")]
+                #[allow(unused_variables, reason = "an input may serve a condition alone")]
                 pub fn formula($($input: $type),+) -> $crate::catalogue::calculations!(@type $([$refusal])? $($one_type)? $($many)?) $body
 
                 impl Calculation<K, N> for This {
