@@ -40,12 +40,8 @@ fn supply(slug: &'static str, edge: &'static str, site: Document) -> Pair {
 
 /// Two banks and a board between them, each behind a fuse at its own end, 1 m of 50 mm² from each.
 fn two_banks() -> Document {
-    let feed = |from: &str| {
-        format!(
-            "name = 'from {from}'; from = '{from}'; to = 'board'; one_way = '0.5 m'; size = '50 mm2'; \
-             insulation = 'PVC 70 degC'; installed = 'clipped'; current = '10 A'"
-        )
-    };
+    let conductor = "one_way = '0.5 m'; size = '50 mm2'; insulation = 'PVC 70 degC'; installed = 'clipped'; \
+                     current = '10 A'";
     Document::run("iec")
         .with("circuit", "from = 'board'")
         .add(
@@ -54,10 +50,10 @@ fn two_banks() -> Document {
              highest = '15 V'; internal_resistance = '5 mohm'",
         )
         .add("board", "name = 'board'; busbar = '250 A'")
-        .add("circuit", &feed("bank"))
+        .add("circuit", &format!("name = 'feeder'; from = 'bank'; to = 'board'; {conductor}"))
         .add("circuit.device", &device("gG", "63 A"))
-        .add("circuit", &feed("reserve"))
-        .add("circuit.device", &device("gG", "63 A"))
+        .add("circuit", &format!("name = 'link'; from = 'board'; to = 'reserve'; {conductor}"))
+        .add("circuit.device", &format!("{}; end = 'to'", device("gG", "63 A")))
 }
 
 pub fn pairs() -> Vec<Pair> {

@@ -55,11 +55,19 @@ fn every_pair_passes_on_one_side_of_its_edge_and_fails_on_the_other() {
 }
 
 #[test]
+fn twins_the_wrong_way_round_are_found_out() {
+    for pair in pairs() {
+        let swapped = Pair { passing: pair.failing, failing: pair.passing, ..pair };
+        assert!(swapped.faults().len() >= 2, "{} {}", swapped.rule, swapped.edge);
+    }
+}
+
+#[test]
 fn every_wiring_rule_has_its_pairs() {
     let pairs = pairs();
     let mut count: BTreeMap<(&str, &str), (usize, usize)> = BTreeMap::new();
     for pair in &pairs {
-        let slot = count.entry((pair.rule, pair.site.rules())).or_default();
+        let slot = count.entry((pair.rule, pair.set())).or_default();
         slot.0 += 1;
         slot.1 += usize::from(pair.severity == Severity::Danger);
     }
@@ -77,6 +85,6 @@ fn every_wiring_rule_has_its_pairs() {
             assert!(count.contains_key(&(rule, set)), "{rule} has no pair under {set}");
         }
     }
-    let edges: BTreeSet<_> = pairs.iter().map(|p| (p.site.rules(), p.edge)).collect();
+    let edges: BTreeSet<_> = pairs.iter().map(|p| (p.set(), p.edge)).collect();
     assert_eq!(edges.len(), pairs.len(), "an edge stands twice");
 }

@@ -49,6 +49,19 @@ pub fn pairs() -> Vec<Pair> {
             "2",
         ));
     }
+    // The user's own word admits aluminium; the terminals and tables remain what they are.
+    for set in ["us", "craft_us"] {
+        pairs.push(refused(
+            "aluminium is refused unless the user admits it",
+            Danger,
+            Document::run(set)
+                .with("load", "current = '2 A'")
+                .with("circuit", "material = 'aluminium'")
+                .add("rules.override", "?"),
+            "aluminium = 'admitted'",
+            "drop = '5 %'",
+        ));
+    }
     for set in ["us", "iec"] {
         pairs.push(refused(
             "solid conductors pass in fixed wiring only",

@@ -22,6 +22,11 @@ pub struct Pair {
 }
 
 impl Pair {
+    /// The rule set; the passing twin's where the twins differ in it.
+    pub fn set(&self) -> &str {
+        if self.site.rules() == "?" { self.passing } else { self.site.rules() }
+    }
+
     pub fn text(&self, value: &str) -> String {
         let text = self.site.to_string();
         assert_eq!(text.matches('?').count(), 1, "{}: twins differ in one place", self.edge);

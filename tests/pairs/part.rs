@@ -70,10 +70,10 @@ pub fn pairs() -> Vec<Pair> {
                 )
                 .add(
                     "circuit",
-                    "name = 'second'; from = 'reserve'; to = 'board'; one_way = '1 m'; size = '16 mm2'; \
+                    "name = 'second'; from = 'board'; to = 'reserve'; one_way = '1 m'; size = '16 mm2'; \
                      insulation = 'PVC 70 degC'; installed = 'clipped'; current = '10 A'",
                 )
-                .add("circuit.device", &device("gG", "40 A")),
+                .add("circuit.device", &format!("{}; end = 'to'", device("gG", "40 A"))),
             passing: "81 A",
             failing: "79 A",
             also: &[],

@@ -15,7 +15,7 @@ fn distance(edge: &'static str, site: Document, passing: &'static str, failing: 
         edge,
         slug: "device-too-far-from-source",
         severity: Danger,
-        site: site.with("circuit.device", "from_source = '?'"),
+        site: site.with("circuit", "one_way = '4 m'").with("circuit.device", "from_source = '?'"),
         passing,
         failing,
         also: &[],
@@ -168,10 +168,10 @@ pub fn pairs() -> Vec<Pair> {
                 .add("board", "name = 'board'; busbar = '100 A'")
                 .add(
                     "circuit",
-                    "name = 'second'; from = 'reserve'; to = 'board'; one_way = '1 m'; size = '4 AWG'; \
+                    "name = 'second'; from = 'board'; to = 'reserve'; one_way = '1 m'; size = '4 AWG'; \
                      class = 2; insulation = 'PVC 75 degC'; current = '10 A'",
                 )
-                .add("circuit.device", &device("class T", "?")),
+                .add("circuit.device", &format!("{}; end = 'to'", device("class T", "?"))),
             passing: "30 A",
             failing: "35 A",
             also: &[],
