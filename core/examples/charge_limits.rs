@@ -15,12 +15,13 @@ fn main() -> Result<(), Error> {
                 println!("  {celsius:>5} °C  no charge");
                 continue;
             }
-            let least = limit.least.map_or_else(|| "-".into(), |i| format!("{:.0} A", i.get::<ampere>()));
+            let least = match limit.least.get::<ampere>() {
+                0.0 => "-".to_owned(),
+                amperes => format!("{amperes:.0} A"),
+            };
             println!("  {celsius:>5} °C  {usual:>5.0} A  {ceiling:>13.0} A  {least:>5}");
         }
-        let source =
-            charge_current_limit(chemistry, capacity, ThermodynamicTemperature::new::<degree_celsius>(20.0))?
-                .citation;
+        let source = charge_limit(chemistry, ThermodynamicTemperature::new::<degree_celsius>(20.0))?.citation;
         println!("  source: {source}; the maker's stated limits govern\n");
     }
     Ok(())

@@ -134,3 +134,28 @@ pub mod guide {
 }
 
 pub use error::Error;
+
+/// Every calculation that all faces offer, room by room, lowest first.
+///
+/// ```
+/// let entry = ampwright::entries().find(|entry| entry.name == "ohm_current").unwrap();
+/// let mut current = [0.0];
+/// (entry.scalar)(&[12.0, 7.2], &mut current)?;
+/// assert_eq!(current, [12.0 / 7.2]);
+/// # Ok::<(), ampwright::Error>(())
+/// ```
+pub fn entries() -> impl Iterator<Item = &'static catalogue::Entry> {
+    [
+        law::CATALOGUE,
+        cable::CATALOGUE,
+        device::CATALOGUE,
+        battery::CATALOGUE,
+        network::CATALOGUE,
+        protection::CATALOGUE,
+        circuit::CATALOGUE,
+    ]
+    .into_iter()
+    .flatten()
+    .copied()
+    .flatten()
+}

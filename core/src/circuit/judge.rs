@@ -10,7 +10,7 @@ use super::facts::Facts;
 use super::run::{Demand, Run};
 use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
-use crate::network::deliver;
+use crate::network::line_delivery;
 use crate::protection::Guard;
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio, ThermodynamicTemperature,
@@ -212,7 +212,7 @@ fn drawn(run: &Run, resistance: ElectricalResistance) -> Result<(ElectricCurrent
     Ok(match run.demand {
         Demand::Current { continuous, other } => (continuous, continuous + other),
         Demand::Power { power, continuous } => {
-            let current = deliver(run.beginning, resistance, power)?.current;
+            let current = line_delivery(run.beginning, resistance, power)?.current;
             (if continuous { current } else { ElectricCurrent::new::<ampere>(0.0) }, current)
         }
     })

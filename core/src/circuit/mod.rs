@@ -7,8 +7,13 @@ mod judge;
 mod run;
 mod size;
 
+use crate::catalogue::Entry;
+
 pub use checked::{Checked, Numbers, Outcome, Relation};
 pub use inverter::{InverterFeed, inverter_feed};
 pub use judge::{Judgement, judge};
 pub use run::{Demand, Run};
 pub use size::{Governing, Rejected, SizedRun, size_run};
+
+/// Every calculation of this room, by file.
+pub const CATALOGUE: &[&[Entry]] = &[inverter::ENTRIES];

@@ -239,7 +239,7 @@ pub(super) fn positive(name: &'static str, value: f64, unit: &'static str) -> Re
 #[cfg(test)]
 mod tests {
     extern crate std;
-    use super::super::deliver;
+    use super::super::line_delivery;
     use super::*;
     use proptest::prelude::*;
     use std::vec;
@@ -271,7 +271,7 @@ mod tests {
             let tree = [node(0, 0.0, 0.0, 0.0, 0.0), node(0, r, p, 0.0, 0.0)];
             let mut state = [NodeState::default(); 2];
             solve(root(e, 0.0), &tree, &mut state).unwrap();
-            let closed = deliver(
+            let closed = line_delivery(
                 ElectricPotential::new::<volt>(e),
                 ElectricalResistance::new::<ohm>(r),
                 Power::new::<watt>(p),

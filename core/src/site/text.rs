@@ -164,7 +164,7 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         for factor in &a.factors {
             {
                 // Writing to a String cannot fail.
-                let _ = write!(words, " × {} {}", factor.value, factor.name);
+                let _ = write!(words, " × {} {}", digits(factor.value), factor.name);
             }
         }
         {

@@ -50,7 +50,7 @@ impl Findings {
 /// All findings of a plan, gravest first, in the order of the document within.
 pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
     let mut found = Findings(Vec::new());
-    let reach = Reach::new(site, plan);
+    let reach = Reach::new(site, &plan.trees, &plan.circuits);
     let ends = ends(&plan.trees, site.circuits.len());
     for (index, circuit) in site.circuits.iter().enumerate() {
         let Some(Some(planned)) = plan.circuits.get(index) else { continue };
