@@ -47,6 +47,11 @@ fn main() -> Result<(), Error> {
     if let Some(guard) = sized.guard {
         println!("  {} {}", guard.device.family, readable(guard.device.rating));
     }
+    println!(
+        "  terminals rated {} °C, switches and other parts {}",
+        sized.terminal_degC,
+        readable(sized.part_rating)
+    );
     println!("  drop {}, loss {}", readable(sized.judgement.drop), readable(sized.judgement.loss));
     for check in &sized.judgement.checks {
         println!("    {check}");
