@@ -71,7 +71,7 @@ pub fn voltage_drop_checked(
 
 #[inline]
 fn positive(value: f64) -> bool {
-    (value > 0.0) & (value <= f64::MAX)
+    value > 0.0 && value <= f64::MAX
 }
 
 #[inline]

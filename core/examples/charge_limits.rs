@@ -1,11 +1,6 @@
 //! Charge limits of a bank over temperature: `cargo run --example charge_limits`.
 
-use ampwright::Error;
-use ampwright::battery::{Chemistry, charge_current_limit};
-use uom::si::electric_charge::ampere_hour;
-use uom::si::electric_current::ampere;
-use uom::si::f64::{ElectricCharge, ThermodynamicTemperature};
-use uom::si::thermodynamic_temperature::degree_celsius;
+use ampwright::prelude::*;
 
 fn main() -> Result<(), Error> {
     let capacity = ElectricCharge::new::<ampere_hour>(100.0);
@@ -20,12 +15,13 @@ fn main() -> Result<(), Error> {
                 println!("  {celsius:>5} °C  no charge");
                 continue;
             }
-            let least = limit.least.map_or_else(|| "-".into(), |i| format!("{:.0} A", i.get::<ampere>()));
+            let least = match limit.least.get::<ampere>() {
+                0.0 => "-".to_owned(),
+                amperes => format!("{amperes:.0} A"),
+            };
             println!("  {celsius:>5} °C  {usual:>5.0} A  {ceiling:>13.0} A  {least:>5}");
         }
-        let source =
-            charge_current_limit(chemistry, capacity, ThermodynamicTemperature::new::<degree_celsius>(20.0))?
-                .citation;
+        let source = charge_limit(chemistry, ThermodynamicTemperature::new::<degree_celsius>(20.0))?.citation;
         println!("  source: {source}; the maker's stated limits govern\n");
     }
     Ok(())

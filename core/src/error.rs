@@ -449,7 +449,7 @@ mod tests {
             (
                 Error::NotTabulated { what: "1 AWG", table: TABLE.recalled(), remedy: "state a size" },
                 "not-tabulated",
-                "1 AWG has no value in IEC 60364-5-52:2009, Table B.52.14 (recalled; verify); state a size",
+                "1 AWG has no value in IEC 60364-5-52:2009, Table B.52.14 (recalled); state a size",
             ),
             (
                 Error::Refused { what: "aluminium", why: "use copper", rule: TABLE },

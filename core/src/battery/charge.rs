@@ -3,13 +3,13 @@
 //! General figures for a chemistry: the maker's stated limits govern where they are known. Whether the sources
 //! that charge a bank together keep to them belongs to the floors above.
 
-use uom::si::electric_charge::ampere_hour;
-use uom::si::electric_current::ampere;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::Chemistry;
+use crate::catalogue::calculations;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
+use crate::law::c_rate_current;
 use crate::quantity::{ChargeRate, ElectricCharge, ElectricCurrent, ThermodynamicTemperature};
 
 /// A rate of a constant table. Only constants call it, so a rate out of range fails the build, never a run.
@@ -79,6 +79,12 @@ const NICKEL_CADMIUM_BANDS: [TemperatureBand; 1] = [band(-20.0, 45.0, 0.2, 0.2, 
 /// The chemistry's bands of charge limits, coldest first, without gaps.
 ///
 /// Rates equal `charge-rates` and `lfp-temperature-limits` in `tests/reference/battery.toml` (tested there).
+///
+/// # Example
+/// ```
+/// use ampwright::battery::{Chemistry, charge_bands};
+/// assert_eq!(charge_bands(Chemistry::Lfp).first().map(|band| band.from_degC), Some(0.0)); // none below
+/// ```
 pub const fn charge_bands(chemistry: Chemistry) -> &'static [TemperatureBand] {
     match chemistry {
         Chemistry::Flooded => &FLOODED_BANDS,
@@ -130,10 +136,13 @@ pub fn charge_limit(
     chemistry: Chemistry,
     temperature: ThermodynamicTemperature,
 ) -> Result<ChargeLimit, Error> {
-    let celsius = checked_celsius(temperature)?;
+    checked_celsius(temperature).map(|celsius| charge_limit_at(chemistry, celsius))
+}
+
+fn charge_limit_at(chemistry: Chemistry, celsius: f64) -> ChargeLimit {
     let bands = charge_bands(chemistry);
     let found = bands.iter().find(|band| celsius >= band.from_degC && celsius <= band.upto_degC);
-    Ok(match (found, bands.first()) {
+    match (found, bands.first()) {
         (Some(band), _) => ChargeLimit {
             usual: band.usual,
             ceiling: band.ceiling,
@@ -146,62 +155,7 @@ pub fn charge_limit(
             least: None,
             citation: first.map_or(LEAD_ACID, |band| band.citation),
         },
-    })
-}
-
-/// Charge limits of a bank in amperes.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct ChargeCurrentLimit {
-    /// Greatest current by default, all sources together; 0 where no charge is admitted.
-    pub usual: ElectricCurrent,
-    /// Greatest current on the maker's or the pack's stated limit only.
-    pub ceiling: ElectricCurrent,
-    /// Least current worth having, where the chemistry wants one.
-    pub least: Option<ElectricCurrent>,
-    /// Source.
-    pub citation: Citation,
-}
-
-/// Greatest and least charge current of a bank at a cell temperature, all sources together.
-///
-/// | input | unit | valid |
-/// | --- | --- | --- |
-/// | `capacity` | Ah | > 0; of the whole bank |
-/// | `temperature` | °C | −60 … 100; of the cells |
-///
-/// # Errors
-/// [`Error::OutOfRange`] for an input that is NaN, infinite or out of range.
-///
-/// # Source
-/// As [`charge_limit`]; current = rate × capacity.
-///
-/// # Example
-/// 100 Ah of LFP takes 50 A at 20 °C, 10 A at 3 °C and nothing in frost:
-/// ```
-/// # use ampwright::battery::{Chemistry, charge_current_limit};
-/// # use uom::si::f64::{ElectricCharge, ThermodynamicTemperature};
-/// # use uom::si::{electric_charge::ampere_hour, electric_current::ampere, thermodynamic_temperature::degree_celsius};
-/// let bank = ElectricCharge::new::<ampere_hour>(100.0);
-/// for (celsius, amperes) in [(20.0, 50.0), (3.0, 10.0), (-1.0, 0.0)] {
-///     let temperature = ThermodynamicTemperature::new::<degree_celsius>(celsius);
-///     let limit = charge_current_limit(Chemistry::Lfp, bank, temperature)?;
-///     assert!((limit.usual.get::<ampere>() - amperes).abs() < 1e-9);
-/// }
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn charge_current_limit(
-    chemistry: Chemistry,
-    capacity: ElectricCharge,
-    temperature: ThermodynamicTemperature,
-) -> Result<ChargeCurrentLimit, Error> {
-    let capacity = checked_capacity(capacity)?;
-    let limit = charge_limit(chemistry, temperature)?;
-    Ok(ChargeCurrentLimit {
-        usual: current(limit.usual, capacity),
-        ceiling: current(limit.ceiling, capacity),
-        least: limit.least.map(|least| current(least, capacity)),
-        citation: limit.citation,
-    })
+    }
 }
 
 /// Greatest continuous discharge rate of a chemistry at a cell temperature, if one is held.
@@ -229,48 +183,95 @@ pub fn discharge_limit(
     chemistry: Chemistry,
     temperature: ThermodynamicTemperature,
 ) -> Result<Option<(ChargeRate, Citation)>, Error> {
-    let celsius = checked_celsius(temperature)?;
+    checked_celsius(temperature).map(|celsius| discharge_limit_at(chemistry, celsius))
+}
+
+fn discharge_limit_at(chemistry: Chemistry, celsius: f64) -> Option<(ChargeRate, Citation)> {
     let citation = match chemistry {
         Chemistry::Lfp => Citation::new("cell data sheets", "LFP discharge limits", Seen::Page),
         Chemistry::Nmc => Citation::new("common cell data", "NMC discharge limits", Seen::Recalled),
-        Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel | Chemistry::NickelCadmium => return Ok(None),
+        Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel | Chemistry::NickelCadmium => return None,
     };
     let admitted = (-20.0..=60.0).contains(&celsius);
-    Ok(Some((if admitted { LITHIUM_DISCHARGE } else { NONE }, citation)))
+    Some((if admitted { LITHIUM_DISCHARGE } else { NONE }, citation))
 }
 
-/// Greatest continuous discharge current of a bank at a cell temperature, if one is held.
-///
-/// # Errors
-/// As [`charge_current_limit`].
-///
-/// # Source
-/// As [`discharge_limit`]; current = rate × capacity.
-///
-/// # Example
-/// ```
-/// # use ampwright::battery::{Chemistry, discharge_current_limit};
-/// # use uom::si::f64::{ElectricCharge, ThermodynamicTemperature};
-/// # use uom::si::{electric_charge::ampere_hour, electric_current::ampere, thermodynamic_temperature::degree_celsius};
-/// let bank = ElectricCharge::new::<ampere_hour>(200.0);
-/// let cool = ThermodynamicTemperature::new::<degree_celsius>(10.0);
-/// let most = discharge_current_limit(Chemistry::Lfp, bank, cool)?.map(|(current, _)| current.get::<ampere>());
-/// assert!((most.unwrap() - 200.0).abs() < 1e-9);
-/// assert!(discharge_current_limit(Chemistry::Flooded, bank, cool)?.is_none());
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn discharge_current_limit(
-    chemistry: Chemistry,
-    capacity: ElectricCharge,
-    temperature: ThermodynamicTemperature,
-) -> Result<Option<(ElectricCurrent, Citation)>, Error> {
-    let capacity = checked_capacity(capacity)?;
-    Ok(discharge_limit(chemistry, temperature)?.map(|(rate, citation)| (current(rate, capacity), citation)))
-}
+calculations! {
+    /// Greatest and least charge current of a bank at a cell temperature, all sources together.
+    ///
+    /// General figures for the chemistry: the maker's stated limits govern where they are known. Where no charge is
+    /// admitted the limits are 0. The source of each figure is in [`charge_limit`].
+    ///
+    /// # Example
+    /// 100 Ah of LFP takes 50 A at 20 °C, 10 A at 3 °C and nothing in frost:
+    /// ```
+    /// use ampwright::{battery::{Chemistry, charge_current_limit}, quantity::{parse, readable}};
+    /// for (temperature, current) in [("20 degC", "50 A"), ("3 degC", "10 A"), ("-1 degC", "0 A")] {
+    ///     let limit = charge_current_limit(Chemistry::Lfp, parse("100 Ah")?, parse(temperature)?)?;
+    ///     assert_eq!(readable(limit.usual).to_string(), current);
+    /// }
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn charge_current_limit(
+        /// Of the bank.
+        chemistry: Chemistry in choice [choice],
+        /// Of the whole bank.
+        capacity: ElectricCharge in ampere_hour [> 0.0],
+        /// Of the cells, not of the air.
+        temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
+    ) => ChargeCurrentLimit {
+        /// Greatest by default; 0 where no charge is admitted.
+        usual: ElectricCurrent in ampere,
+        /// Greatest on the maker's or the pack's stated limit only.
+        ceiling: ElectricCurrent in ampere,
+        /// Least worth having; 0 where the chemistry wants none.
+        least: ElectricCurrent in ampere,
+    }
+    formula "I = r·C, r the chemistry's rate in the temperature's band"
+    source "lead-acid: common handbook values (recalled); LFP: cell data sheets and a battery manual, of which the lower; NMC and nickel-cadmium recalled"
+    {
+        let limit = charge_limit_at(chemistry, temperature.get::<degree_celsius>());
+        let current = |rate| c_rate_current::formula(rate, capacity);
+        ChargeCurrentLimit {
+            usual: current(limit.usual),
+            ceiling: current(limit.ceiling),
+            least: current(limit.least.unwrap_or(NONE)),
+        }
+    }
 
-/// Rate × capacity, the capacity in ampere-hours.
-fn current(rate: ChargeRate, capacity_ampere_hours: f64) -> ElectricCurrent {
-    ElectricCurrent::new::<ampere>(rate.get() * capacity_ampere_hours)
+    /// Greatest continuous discharge current of a lithium bank at a cell temperature.
+    ///
+    /// 0 where no discharge is admitted. [`discharge_limit`] tells the source, and which chemistries have a limit.
+    ///
+    /// # Example
+    /// ```
+    /// use ampwright::{battery::{Chemistry, discharge_current_limit}, quantity::{parse, readable}};
+    /// let most = discharge_current_limit(Chemistry::Lfp, parse("200 Ah")?, parse("10 degC")?)?;
+    /// assert_eq!(readable(most).to_string(), "200 A");
+    /// assert!(discharge_current_limit(Chemistry::Flooded, parse("200 Ah")?, parse("10 degC")?).is_err());
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn discharge_current_limit(
+        /// Of the bank.
+        chemistry: Chemistry in choice [choice],
+        /// Of the whole bank.
+        capacity: ElectricCharge in ampere_hour [> 0.0],
+        /// Of the cells, not of the air.
+        temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
+    ) -> current: ElectricCurrent in ampere
+    formula "I = r·C, r = 1 /h from −20 to 60 °C, else 0"
+    source "LFP: three cell and battery sheets; NMC the same, recalled"
+    fallible "the chemistry has no discharge limit of its own: lead-acid and nickel-cadmium"
+    {
+        match discharge_limit_at(chemistry, temperature.get::<degree_celsius>()) {
+            Some((rate, _)) => Ok(c_rate_current::formula(rate, capacity)),
+            None => Err(Error::NotTabulated {
+                what: "the discharge limit of a lead-acid or nickel-cadmium bank",
+                table: Citation::new("cell data sheets", "discharge limits", Seen::Page),
+                remedy: "its capacity at the rate and its voltage under load limit it; use the maker's figures",
+            }),
+        }
+    }
 }
 
 fn checked_celsius(temperature: ThermodynamicTemperature) -> Result<f64, Error> {
@@ -284,22 +285,12 @@ fn checked_celsius(temperature: ThermodynamicTemperature) -> Result<f64, Error> 
     Ok(celsius)
 }
 
-/// The capacity in ampere-hours.
-pub(super) fn checked_capacity(capacity: ElectricCharge) -> Result<f64, Error> {
-    let ampere_hours = capacity.get::<ampere_hour>();
-    // Written so that NaN fails.
-    if !(ampere_hours > 0.0 && ampere_hours <= f64::MAX) {
-        let allowed = Allowed::Above(0.0);
-        return Err(Error::OutOfRange { name: "capacity", value: ampere_hours, unit: "Ah", allowed });
-    }
-    Ok(ampere_hours)
-}
-
 #[cfg(test)]
 mod tests {
     extern crate std;
     use super::*;
     use std::string::ToString;
+    use uom::si::electric_charge::ampere_hour;
 
     fn at(celsius: f64) -> ThermodynamicTemperature {
         ThermodynamicTemperature::new::<degree_celsius>(celsius)
@@ -344,6 +335,14 @@ mod tests {
         assert_eq!(limit.least.map(ChargeRate::get), Some(0.1));
         assert_eq!(usual(Chemistry::Flooded, -21.0), 0.0);
         assert_eq!(usual(Chemistry::Flooded, 51.0), 0.0);
+    }
+
+    #[test]
+    fn all_functions_answer_the_same_temperatures() {
+        let range = Allowed::Between(RANGE_degC.0, RANGE_degC.1);
+        for entry in ENTRIES {
+            assert_eq!(entry.inputs[2].range, range, "{}", entry.name);
+        }
     }
 
     #[test]

@@ -5,6 +5,7 @@ use core::str::FromStr;
 
 use uom::si::electric_potential::volt;
 
+use crate::catalogue::Choice;
 use crate::error::{Error, Snippet};
 use crate::quantity::ElectricPotential;
 
@@ -66,6 +67,19 @@ impl Chemistry {
     }
 }
 
+impl Choice for Chemistry {
+    const ALL: &'static [Self] = &Self::ALL;
+    const WORDS: &'static [&'static str] = &[
+        Self::Flooded.word(),
+        Self::Agm.word(),
+        Self::Gel.word(),
+        Self::Lfp.word(),
+        Self::Nmc.word(),
+        Self::NickelCadmium.word(),
+    ];
+    const FIRST: Self = Self::Flooded;
+}
+
 impl fmt::Display for Chemistry {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         f.write_str(self.word())
@@ -81,5 +95,16 @@ impl FromStr for Chemistry {
             text: Snippet::new(text),
             allowed: "flooded, agm, gel, lfp, nmc, nicd",
         })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn codes_and_words_keep_one_order() {
+        assert!(Chemistry::ALL.map(Chemistry::word).iter().eq(<Chemistry as Choice>::WORDS));
+        assert_eq!(<Chemistry as Choice>::ALL[0], Chemistry::FIRST);
     }
 }

@@ -4,12 +4,17 @@ mod charge;
 mod chemistry;
 mod fault;
 
+use crate::catalogue::Entry;
+
 pub use charge::{
     ChargeCurrentLimit, ChargeLimit, TemperatureBand, charge_bands, charge_current_limit, charge_limit,
     discharge_current_limit, discharge_limit,
 };
 pub use chemistry::Chemistry;
 pub use fault::{
-    FaultVoltage, ResistanceRise, ShortCircuitEstimate, bank_resistance, fault_voltage, resistance_rise,
-    short_circuit_estimate,
+    FaultVoltage, LEAD_ACID_SHORT_CIRCUIT, ResistanceRise, ShortCircuitEstimate, bank_resistance,
+    fault_voltage, greatest_bank_resistance, resistance_rise, short_circuit_estimate,
 };
+
+/// Every calculation of this room, by file.
+pub const CATALOGUE: &[&[Entry]] = &[charge::ENTRIES, fault::ENTRIES];

@@ -1,6 +1,7 @@
 //! One conductor: metal, stranding, coating, size, insulation.
 
 use super::Insulation;
+use crate::catalogue::Choice;
 use crate::quantity::ConductorSize;
 
 /// Metal of the conductor.
@@ -50,4 +51,38 @@ pub struct Conductor {
     pub coating: Coating,
     /// Insulation with its temperature rating.
     pub insulation: Insulation,
+}
+
+impl Conductor {
+    /// Plain copper of class 5, the usual conductor of this trade. Change the fields that differ.
+    ///
+    /// # Example
+    /// ```
+    /// # use ampwright::cable::{Coating, Conductor};
+    /// let cable = Conductor::flexible_copper("16 mm2".parse()?, "PVC 70 degC".parse()?);
+    /// let tinned = Conductor { coating: Coating::Tinned, ..cable };
+    /// assert_eq!(tinned.size.to_string(), "16 mm2");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    pub const fn flexible_copper(size: ConductorSize, insulation: Insulation) -> Self {
+        Self { size, material: Material::Copper, class: Class::Flexible, coating: Coating::Plain, insulation }
+    }
+}
+
+impl Choice for Material {
+    const ALL: &'static [Self] = &[Self::Copper, Self::Aluminium, Self::CopperCladAluminium];
+    const WORDS: &'static [&'static str] = &["copper", "aluminium", "copper_clad_aluminium"];
+    const FIRST: Self = Self::Copper;
+}
+
+impl Choice for Class {
+    const ALL: &'static [Self] = &[Self::Solid, Self::Stranded, Self::Flexible, Self::ExtraFlexible];
+    const WORDS: &'static [&'static str] = &["class_1", "class_2", "class_5", "class_6"];
+    const FIRST: Self = Self::Solid;
+}
+
+impl Choice for Coating {
+    const ALL: &'static [Self] = &[Self::Plain, Self::Tinned];
+    const WORDS: &'static [&'static str] = &["plain", "tinned"];
+    const FIRST: Self = Self::Plain;
 }

@@ -2,11 +2,14 @@
 //!
 //! How long a fault lasts, and whether the conductor withstands it, belongs to [`crate::protection`].
 
+use uom::si::electric_current_density::ampere_per_square_millimeter;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::{Compound, Insulation, Material};
+use crate::catalogue::calculations;
 use crate::citation::{Citation, Seen};
-use crate::error::{Allowed, Error};
+use crate::error::Error;
+use crate::law::ElectricCurrentDensity;
 use crate::quantity::{ConductorSize, ThermodynamicTemperature, sqrt};
 
 /// Table 43A of IEC 60364-4-43: copper cells read on a page, aluminium recalled.
@@ -107,7 +110,7 @@ pub fn adiabatic_k(
     size: ConductorSize,
 ) -> Result<AdiabaticK, Error> {
     let (initial, end) = (insulation.rating_degC(), insulation.short_circuit_degC(size));
-    let formula = formula(material, initial, end)?;
+    let formula = formula_k(material, initial, end)?;
     let tabled = ADIABATIC_K
         .iter()
         .find(|r| r.compound == insulation.compound() && r.initial_degC == initial && r.final_degC == end)
@@ -124,51 +127,41 @@ pub fn adiabatic_k(
     })
 }
 
-/// k of the adiabatic equation between two conductor temperatures, by the formula alone: for a conductor that does
-/// not start at its rating, such as a protective conductor at 30 °C.
-///
-/// | input | unit | valid |
-/// | --- | --- | --- |
-/// | `initial` | °C | −80 … 250 |
-/// | `end` | °C | above `initial`, up to 400 |
-///
-/// # Errors
-/// [`Error::OutOfRange`] for a temperature that is NaN or out of range; [`Error::NotTabulated`] for copper-clad
-/// aluminium.
-///
-/// # Source
-/// k = K·√ln(1 + (θf − θi)/(β + θi)), IEC 60364-5-54:2011, Annex A.
-///
-/// # Example
-/// ```
-/// # use ampwright::cable::{Material, adiabatic_k_between};
-/// # use ampwright::quantity::ThermodynamicTemperature;
-/// # use uom::si::thermodynamic_temperature::degree_celsius;
-/// let at = ThermodynamicTemperature::new::<degree_celsius>;
-/// let k = adiabatic_k_between(Material::Copper, at(30.0), at(160.0))?;
-/// assert!((k.value - 143.0).abs() < 0.5);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn adiabatic_k_between(
-    material: Material,
-    initial: ThermodynamicTemperature,
-    end: ThermodynamicTemperature,
-) -> Result<AdiabaticK, Error> {
-    let (initial, end) = (initial.get::<degree_celsius>(), end.get::<degree_celsius>());
-    if !(-80.0..=250.0).contains(&initial) {
-        let allowed = Allowed::Between(-80.0, 250.0);
-        return Err(Error::OutOfRange { name: "initial temperature", value: initial, unit: "degC", allowed });
+calculations! {
+    /// Current density that a conductor stands for one second from one temperature to another: k of the adiabatic
+    /// equation, by the formula alone.
+    ///
+    /// For a conductor that does not start at its rating, such as a protective conductor at 30 °C; at its rating
+    /// [`adiabatic_k`] knows the tables. [`law::adiabatic_area()`](crate::law::adiabatic_area()) takes it.
+    ///
+    /// # Example
+    /// ```
+    /// use ampwright::{cable::{Material, adiabatic_k_between}, quantity::parse};
+    /// use uom::si::electric_current_density::ampere_per_square_millimeter;
+    /// let k = adiabatic_k_between(Material::Copper, parse("30 degC")?, parse("160 degC")?)?;
+    /// assert!((k.get::<ampere_per_square_millimeter>() - 143.0).abs() < 0.5);
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn adiabatic_k_between(
+        /// Of the conductor.
+        material: Material in choice [choice],
+        /// Before the fault.
+        initial: ThermodynamicTemperature in degree_celsius [-80.0 ..= 250.0],
+        /// When the device has opened.
+        end: ThermodynamicTemperature in degree_celsius [-80.0 ..= 400.0],
+    ) -> one_second_density: ElectricCurrentDensity in ampere_per_square_millimeter
+    where (initial < end) end in degree_celsius: "it must be above the initial temperature"
+    formula "k = K·√ln(1 + (θ_f − θ_i)/(β + θ_i)); K = 226, β = 234.5 for copper, 148 and 228 for aluminium"
+    source "IEC 60364-5-54:2011, Annex A"
+    fallible "the conductor is copper-clad aluminium, for which no k is held"
+    {
+        let k = formula_k(material, initial.get::<degree_celsius>(), end.get::<degree_celsius>())?;
+        Ok(ElectricCurrentDensity::new::<ampere_per_square_millimeter>(k))
     }
-    // Written so that NaN fails.
-    if !(end > initial && end <= 400.0) {
-        let allowed = Allowed::AboveUpTo(initial, 400.0);
-        return Err(Error::OutOfRange { name: "end temperature", value: end, unit: "degC", allowed });
-    }
-    Ok(AdiabaticK { value: formula(material, initial, end)?, citation: ADIABATIC_FORMULA })
 }
 
 /// k = K·√ln(1 + (θf − θi)/(β + θi)), temperatures in °C.
-fn formula(material: Material, initial: f64, end: f64) -> Result<f64, Error> {
+fn formula_k(material: Material, initial: f64, end: f64) -> Result<f64, Error> {
     let (constant, beta) = match material {
         Material::Copper => (226.0, 234.5),
         Material::Aluminium => (148.0, 228.0),

@@ -4,13 +4,12 @@
 //! for the drop and the least prospective current, so they lie on the high side; for the greatest prospective
 //! current a joint counts as nothing (R6).
 
-use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::electrical_resistance::ohm;
-use uom::si::power::watt;
 
+use crate::catalogue::{Choice, calculations};
 use crate::citation::{Citation, Seen};
-use crate::error::{Allowed, Error};
+use crate::law::{ohm_resistance, power_in_resistance};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power};
 
 /// Kind of joint or part in the path, for its generic resistance.
@@ -95,78 +94,63 @@ pub fn joint_resistance(kind: JointKind) -> ElectricalResistance {
     ElectricalResistance::new::<ohm>(kind.generic().0)
 }
 
-/// Generic resistance of one joint or part of a known rating: its generic voltage drop at the rating over the
-/// rating. A 10 A breaker has ten times the resistance of a 100 A one.
-///
-/// # Errors
-/// [`Error::OutOfRange`] if the rating is not greater than 0 and finite.
-///
-/// # Source
-/// Common practice, no source: volts at rated current lug 10 mV, terminal 20 mV, switch 50 mV, relay 80 mV, fuse
-/// with holder 100 mV, breaker pole 200 mV, shunt 75 mV, busbar 10 mV, connector 50 mV.
-///
-/// # Example
-/// ```
-/// # use ampwright::cable::{JointKind, rated_joint_resistance};
-/// # use uom::si::{f64::ElectricCurrent, electric_current::ampere, electrical_resistance::milliohm};
-/// let fuse = rated_joint_resistance(JointKind::Fuse, ElectricCurrent::new::<ampere>(50.0))?;
-/// assert!((fuse.get::<milliohm>() - 2.0).abs() < 1e-12); // 100 mV at 50 A
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn rated_joint_resistance(
-    kind: JointKind,
-    rating: ElectricCurrent,
-) -> Result<ElectricalResistance, Error> {
-    let amperes = rating.get::<ampere>();
-    // Written so that NaN fails.
-    if !(amperes > 0.0 && amperes <= f64::MAX) {
-        let allowed = Allowed::Above(0.0);
-        return Err(Error::OutOfRange { name: "rating", value: amperes, unit: "A", allowed });
-    }
-    Ok(ElectricPotential::new::<volt>(kind.generic().1) / rating)
+impl Choice for JointKind {
+    const ALL: &'static [Self] = &Self::ALL;
+    const WORDS: &'static [&'static str] =
+        &["lug", "terminal", "switch", "relay", "fuse", "breaker", "shunt", "busbar", "connector"];
+    const FIRST: Self = Self::Lug;
 }
 
-/// Heat made in one joint: I²R.
-///
-/// # Errors
-/// [`Error::OutOfRange`] if the current is not finite, or the resistance is negative or not finite.
-///
-/// # Source
-/// Joule's law, P = I²·R.
-///
-/// # Example
-/// A lug gone bad, 2 mΩ at 150 A, makes 45 W where a hand could touch it:
-/// ```
-/// # use ampwright::cable::joint_heat;
-/// # use uom::si::f64::{ElectricCurrent, ElectricalResistance};
-/// # use uom::si::{electric_current::ampere, electrical_resistance::milliohm, power::watt};
-/// let heat = joint_heat(
-///     ElectricCurrent::new::<ampere>(150.0),
-///     ElectricalResistance::new::<milliohm>(2.0),
-/// )?;
-/// assert!((heat.get::<watt>() - 45.0).abs() < 1e-9);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn joint_heat(current: ElectricCurrent, resistance: ElectricalResistance) -> Result<Power, Error> {
-    let (amperes, ohms) = (current.get::<ampere>(), resistance.get::<ohm>());
-    if !amperes.is_finite() {
-        return Err(Error::OutOfRange {
-            name: "current",
-            value: amperes,
-            unit: "A",
-            allowed: Allowed::Finite,
-        });
-    }
-    // NaN lies in no range.
-    if !(0.0..=f64::MAX).contains(&ohms) {
-        let allowed = Allowed::AtLeast(0.0);
-        return Err(Error::OutOfRange { name: "resistance", value: ohms, unit: "ohm", allowed });
-    }
-    Ok(Power::new::<watt>(amperes * amperes * ohms))
+calculations! {
+    /// Generic resistance of one joint or part of a known rating.
+    ///
+    /// A 10 A breaker has ten times the resistance of a 100 A one. For a measured or stated one take that.
+    ///
+    /// # Example
+    /// 100 mV at 50 A:
+    /// ```
+    /// use ampwright::{cable::{JointKind, rated_joint_resistance}, quantity::{parse, readable}};
+    /// let fuse = rated_joint_resistance(JointKind::Fuse, parse("50 A")?)?;
+    /// assert_eq!(readable(fuse).to_string(), "2 mΩ");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn rated_joint_resistance(
+        /// Kind of joint or part.
+        kind: JointKind in choice [choice],
+        /// Of the part.
+        rating: ElectricCurrent in ampere [> 0.0],
+    ) -> resistance: ElectricalResistance in ohm
+    formula "R = U/I; at the rated current lug 10 mV, terminal 20 mV, switch 50 mV, relay 80 mV, fuse with holder 100 mV, breaker pole 200 mV, shunt 75 mV, busbar 10 mV, connector 50 mV"
+    source "common practice, no source"
+    { ohm_resistance::formula(ElectricPotential::new::<volt>(kind.generic().1), rating) }
+
+    /// Heat made in one joint.
+    ///
+    /// A joint is what no fuse sees.
+    ///
+    /// # Example
+    /// A lug gone bad, 2 mΩ at 150 A, makes 45 W where a hand could touch it:
+    /// ```
+    /// use ampwright::{cable::joint_heat, quantity::{parse, readable}};
+    /// let heat = joint_heat(parse("150 A")?, parse("2 mohm")?)?;
+    /// assert_eq!(readable(heat).to_string(), "45 W");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn joint_heat(
+        /// Through the joint.
+        current: ElectricCurrent in ampere [any],
+        /// Of the joint, measured or generic.
+        resistance: ElectricalResistance in ohm [>= 0.0],
+    ) -> heat: Power in watt
+    formula "P = I²·R"
+    source "Joule's law"
+    { power_in_resistance::formula(current, resistance) }
 }
 
 #[cfg(test)]
 mod tests {
+    use uom::si::electric_current::ampere;
+
     use super::*;
 
     #[test]

@@ -8,6 +8,9 @@ mod lug;
 mod resistance;
 mod resistance_table;
 mod series;
+mod whole;
+
+use crate::catalogue::Entry;
 
 pub use conductor::{Class, Coating, Conductor, Material};
 pub use heat::{ADIABATIC_K, AdiabaticK, AdiabaticRow, adiabatic_k, adiabatic_k_between};
@@ -23,3 +26,7 @@ pub use resistance_table::{
     CLASS_1, CLASS_2, CLASS_5, CLASS_6, ResistanceRow, ResistanceTable, TABLE_8_SOLID, TABLE_8_STRANDED,
 };
 pub use series::{AWG_SERIES, METRIC_SERIES};
+pub use whole::{conductor_resistance, gauge_conductor_resistance, iec_conductor_resistance};
+
+/// Every calculation of this room, by file.
+pub const CATALOGUE: &[&[Entry]] = &[resistance::ENTRIES, whole::ENTRIES, joint::ENTRIES, heat::ENTRIES];

@@ -12,6 +12,7 @@ use super::resistance_table::{
     CLASS_1, CLASS_2, CLASS_5, CLASS_6, ResistanceTable, TABLE_8_SOLID, TABLE_8_STRANDED,
 };
 use super::{Class, Coating, Conductor, Material};
+use crate::catalogue::calculations;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
 use crate::quantity::{
@@ -107,6 +108,19 @@ pub fn linear_resistance(
 ///
 /// # Errors
 /// As [`linear_resistance`].
+///
+/// # Example
+/// ```
+/// # use ampwright::cable::{Conductor, linear_resistance_with_source};
+/// # use ampwright::quantity::ThermodynamicTemperature;
+/// # use uom::si::thermodynamic_temperature::degree_celsius;
+/// let cable = Conductor::flexible_copper("16 mm2".parse()?, "PVC 70 degC".parse()?);
+/// let at_20 = ThermodynamicTemperature::new::<degree_celsius>(20.0);
+/// let (resistance, source) = linear_resistance_with_source(&cable, at_20)?;
+/// assert!((resistance.value * 1000.0 - 1.21).abs() < 1e-9); // Ω/km
+/// assert!(source.citation.document.starts_with("IEC 60228"));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn linear_resistance_with_source(
     conductor: &Conductor,
     temperature: ThermodynamicTemperature,
@@ -167,29 +181,29 @@ pub fn least_linear_resistance(
     Ok(if full_area <= greatest.0 { (full_area, ResistanceSource { citation }) } else { greatest })
 }
 
-/// Resistivity of the conductor's metal at a temperature, without any allowance.
-///
-/// # Errors
-/// As [`linear_resistance`].
-///
-/// # Source
-/// Copper IEC 60028:1925; aluminium IEC 60889 and copper-clad aluminium ASTM B566, class 10, both recalled.
-///
-/// # Example
-/// ```
-/// # use ampwright::cable::{Material, resistivity};
-/// # use ampwright::quantity::ThermodynamicTemperature;
-/// # use uom::si::{thermodynamic_temperature::degree_celsius, electrical_resistivity::ohm_meter};
-/// let at_20 = resistivity(Material::Copper, ThermodynamicTemperature::new::<degree_celsius>(20.0))?;
-/// assert!((at_20.get::<ohm_meter>() * 58e6 - 1.0).abs() < 1e-12);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn resistivity(
-    material: Material,
-    temperature: ThermodynamicTemperature,
-) -> Result<ElectricalResistivity, Error> {
-    let celsius = checked_celsius(temperature)?;
-    Ok(ElectricalResistivity::new::<ohm_meter>(ohm_mm2_per_m(material, celsius) * 1e-6))
+calculations! {
+    /// Resistivity of a conductor's metal at a temperature, without any allowance.
+    ///
+    /// # Example
+    /// ```
+    /// use ampwright::{cable::{Material, resistivity}, quantity::parse};
+    /// use uom::si::electrical_resistivity::ohm_square_millimeter_per_meter;
+    /// let at_20 = resistivity(Material::Copper, parse("20 degC")?)?;
+    /// assert!((at_20.get::<ohm_square_millimeter_per_meter>() * 58.0 - 1.0).abs() < 1e-12);
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn resistivity(
+        /// Of the conductor.
+        material: Material in choice [choice],
+        /// Of the conductor, not of the air.
+        temperature: ThermodynamicTemperature in degree_celsius [-80.0 ..= 250.0],
+    ) -> resistivity: ElectricalResistivity in ohm_meter
+    formula "ρ = ρ₂₀·(θ − θ₀)/(20 °C − θ₀); copper 1/58 Ω·mm²/m, θ₀ = −234.5 °C"
+    source "IEC 60028:1925; aluminium IEC 60889, copper-clad aluminium ASTM B566, class 10 (both recalled)"
+    {
+        let celsius = temperature.get::<degree_celsius>();
+        ElectricalResistivity::new::<ohm_meter>(ohm_mm2_per_m(material, celsius) * 1e-6)
+    }
 }
 
 fn checked_celsius(temperature: ThermodynamicTemperature) -> Result<f64, Error> {
@@ -226,7 +240,7 @@ fn copper(conductor: &Conductor, celsius: f64) -> (f64, Citation) {
     }
 }
 
-const fn class_table(class: Class) -> &'static ResistanceTable {
+pub(super) const fn class_table(class: Class) -> &'static ResistanceTable {
     match class {
         Class::Solid => &CLASS_1,
         Class::Stranded => &CLASS_2,
@@ -391,6 +405,11 @@ mod tests {
         assert_eq!(seen(mm2(25.0), Class::ExtraFlexible), Seen::Recalled);
         assert_eq!(seen(awg(2), Class::Stranded), Seen::Recalled);
         assert_eq!(seen(awg(6), Class::Stranded), Seen::Page);
+    }
+
+    #[test]
+    fn all_functions_answer_the_same_temperatures() {
+        assert_eq!(ENTRIES[0].inputs[1].range, Allowed::Between(RANGE_degC.0, RANGE_degC.1));
     }
 
     #[test]

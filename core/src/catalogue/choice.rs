@@ -3,6 +3,8 @@
 use crate::error::Allowed;
 
 /// An enum that is an input of a calculation.
+///
+/// Codes are permanent: new variants come last.
 pub trait Choice: Copy + 'static {
     /// The variants in the order of their codes; never empty.
     const ALL: &'static [Self];
@@ -18,7 +20,6 @@ pub trait Choice: Copy + 'static {
 }
 
 /// The codes of a number of variants.
-#[allow(dead_code, reason = "for declarations with a choice; the laws have none")]
 pub(crate) const fn codes(variants: usize) -> Allowed {
     // No list of words is that long.
     #[allow(clippy::cast_possible_truncation)]

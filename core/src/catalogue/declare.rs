@@ -14,8 +14,12 @@
 ///     where (a < b) => (error)                      // … or giving an error of its own
 ///     formula "…" source "…"
 ///     { body }                                      // plain quantities, no Result
+///     fallible "when it is refused" { body }        // … or a Result, for what conditions cannot say
 /// }
 /// ```
+///
+/// A body of plain quantities is computed for whole columns without a jump; it meets inputs that are not valid, too. A
+/// `fallible` body has no such path: its columns are computed row by row, and its `formula` is a `Result`.
 ///
 /// Emits the typed, checked function `name`, and a hidden module `name` with the unchecked `formula` for rooms that
 /// have checked already, and the `ENTRY`. A result that is infinite or NaN is an error too.
@@ -36,6 +40,7 @@ macro_rules! calculations {
         $(where ($condition:expr) $($culprit:ident in $culprit_unit:ident: $why:literal)? $(=> ($error:expr))?)*
         formula $formula:literal
         source $source:literal
+        $(fallible $refusal:literal)?
         $body:block
     )+) => {
         $(
@@ -61,6 +66,7 @@ macro_rules! calculations {
                 "or if the result is too large for a number."
             )]
             $(#[doc = concat!("\n", "Refused also unless `", stringify!($condition), "`.")])*
+            $(#[doc = concat!("\n", "Refused also where ", $refusal, ".")])?
             ///
             /// # Source
             #[doc = concat!($formula, ". ", $source)]
@@ -79,7 +85,7 @@ macro_rules! calculations {
                     });)?
                     $(return Err($error);)?
                 })*
-                let result = $name::formula($($input),+);
+                let result = $crate::catalogue::calculations!(@settle [$($refusal)?] $name::formula($($input),+));
                 $($crate::catalogue::calculations!(@result $one_unit $one result);)?
                 $($($crate::catalogue::calculations!(@result $field_unit $field (result.$field));)+)?
                 Ok(result)
@@ -100,7 +106,8 @@ macro_rules! calculations {
                 /// The formula alone, for inputs that are checked.
                 #[inline(always)]
                 #[allow(clippy::inline_always, reason = "array loops become vector code only with the formula in them")]
-                pub fn formula($($input: $type),+) -> $crate::catalogue::calculations!(@type $($one_type)? $($many)?) $body
+                #[allow(unused_variables, reason = "an input may serve a condition alone")]
+                pub fn formula($($input: $type),+) -> $crate::catalogue::calculations!(@type $([$refusal])? $($one_type)? $($many)?) $body
 
                 impl Calculation<K, N> for This {
                     #[inline]
@@ -109,7 +116,10 @@ macro_rules! calculations {
                         let result = super::$name($($input),+)?;
                         Ok([$($crate::catalogue::unit::plain!($one_unit result))? $($($crate::catalogue::unit::plain!($field_unit result.$field)),+)?])
                     }
+                }
 
+                $crate::catalogue::calculations!(@infallible [$($refusal)?] {
+                impl $crate::catalogue::Lane<K, N> for This {
                     #[inline(always)]
                     #[allow(clippy::inline_always, reason = "as `formula`")]
                     fn lane([$($input),+]: [f64; K]) -> (bool, [f64; N]) {
@@ -126,6 +136,7 @@ macro_rules! calculations {
                         (all, [$($crate::catalogue::unit::plain!($one_unit result))? $($($crate::catalogue::unit::plain!($field_unit result.$field)),+)?])
                     }
                 }
+                });
 
                 /// What the faces know.
                 pub const ENTRY: Entry = Entry {
@@ -155,11 +166,12 @@ macro_rules! calculations {
                         }),+)?
                     ],
                     conditions: &[$(stringify!($condition)),*],
+                    refusal: $crate::catalogue::calculations!(@default $($refusal)?),
                     formula: $formula,
                     source: $source,
                     scalar: scalar::<This, K, N>,
                     #[cfg(feature = "std")]
-                    array: $crate::catalogue::array::<This, K, N>,
+                    array: $crate::catalogue::calculations!(@array [$($refusal)?]),
                 };
             }
         )+
@@ -169,6 +181,13 @@ macro_rules! calculations {
     };
 
     (@type $type:ident) => { $type };
+    (@type [$refusal:literal] $type:ident) => { Result<$type, $crate::Error> };
+    (@settle [] $result:expr) => { $result };
+    (@settle [$refusal:literal] $result:expr) => { $result? };
+    (@infallible [] { $($item:tt)* }) => { $($item)* };
+    (@infallible [$refusal:literal] { $($item:tt)* }) => {};
+    (@array []) => { $crate::catalogue::array::<This, K, N> };
+    (@array [$refusal:literal]) => { $crate::catalogue::array_by_row::<This, K, N> };
     (@default) => { None };
     (@default $default:literal) => { Some($default) };
     (@check choice $type:ident $input:ident [$($range:tt)+]) => {};

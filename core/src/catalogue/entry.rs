@@ -15,6 +15,8 @@ pub struct Entry {
     pub outputs: &'static [Output],
     /// What the inputs must fulfil together.
     pub conditions: &'static [&'static str],
+    /// When it is refused, where conditions cannot say so.
+    pub refusal: Option<&'static str>,
     /// The formula, in the trade's symbols.
     pub formula: &'static str,
     /// Where the formula comes from.
@@ -69,6 +71,11 @@ pub struct Output {
 pub trait Calculation<const K: usize, const N: usize> {
     /// Checked, through the typed function.
     fn one(inputs: [f64; K]) -> Result<[f64; N], Error>;
+}
+
+/// A calculation whose formula cannot fail.
+#[doc(hidden)]
+pub trait Lane<const K: usize, const N: usize>: Calculation<K, N> {
     /// Whatever the inputs, without a jump; and whether `one` would succeed.
     fn lane(inputs: [f64; K]) -> (bool, [f64; N]);
 }

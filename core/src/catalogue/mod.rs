@@ -14,15 +14,14 @@ pub(crate) mod unit;
 #[cfg(feature = "std")]
 pub use self::{array::AtIndex, entry::Array};
 pub use choice::Choice;
-#[allow(unused_imports, reason = "as `codes`")]
 pub(crate) use choice::codes;
 pub(crate) use declare::calculations;
 #[doc(hidden)]
-pub use entry::{Calculation, scalar};
+pub use entry::{Calculation, Lane, scalar};
 pub use entry::{Entry, Input, Output};
 
 #[cfg(feature = "std")]
-pub(crate) use array::array;
+pub(crate) use array::{array, array_by_row};
 
 #[cfg(test)]
 mod tests;

@@ -52,7 +52,23 @@ calculations! {
         let more = closed.get::<degree_celsius>() + stored.value;
         Probe { first: open * factor, second: Ratio::new::<uom::si::ratio::ratio>(more / half.value) }
     }
+
+    /// A stand-in whose formula can fail.
+    fn moody(
+        /// Chosen.
+        metal: Metal in choice [choice],
+        /// Doubled.
+        single: ElectricPotential in volt [any],
+    ) -> double: ElectricPotential in volt
+    formula "none"
+    source "none"
+    fallible "the metal is brass"
+    {
+        if metal == Metal::Brass { Err(BRASS) } else { Ok(single + single) }
+    }
 }
+
+const BRASS: Error = Error::NotATree { what: "brass" };
 
 const GOOD: [f64; 5] = [2.0, 12.0, 20.0, 10.0, 1.0];
 
@@ -116,6 +132,7 @@ fn the_entry_tells_what_was_declared() {
     assert_eq!((entry.inputs[3].unit, entry.inputs[3].suffix), ("mm²", "mm2"));
     assert_eq!(entry.outputs[1].doc, "Second.");
     assert_eq!(entry.conditions, ["open.value < 1e6"]);
+    assert_eq!((entry.refusal, moody::ENTRY.refusal), (None, Some("the metal is brass")));
 }
 
 #[test]
@@ -126,11 +143,24 @@ fn wrong_counts_are_named() {
     assert_eq!(error, Error::WrongCount { what: "outputs", given: 3, needed: 2 });
 }
 
+#[test]
+fn a_formula_that_fails_gives_its_own_error_after_the_checks() {
+    let of = |metal, volts| {
+        let mut double = [0.0];
+        (moody::ENTRY.scalar)(&[metal, volts], &mut double).map(|()| double[0])
+    };
+    assert_eq!(of(0.0, 3.0), Ok(6.0));
+    assert_eq!(of(2.0, 3.0), Err(BRASS));
+    assert!(matches!(of(2.0, f64::NAN), Err(Error::OutOfRange { name: "single", .. })));
+    assert!(matches!(of(0.0, f64::MAX), Err(Error::OutOfRange { name: "double", .. })));
+}
+
 #[cfg(feature = "std")]
 mod columns {
     use std::vec;
 
     use super::*;
+    use crate::catalogue::AtIndex;
 
     /// `rows` good rows with one bad voltage among them.
     fn first_bad(rows: usize, bad: &[usize]) -> Option<usize> {
@@ -161,6 +191,23 @@ mod columns {
             }
         }
         assert_eq!(first_bad(0, &[]), None);
+    }
+
+    #[test]
+    fn a_formula_that_can_fail_is_done_row_by_row() {
+        let rows = 600;
+        let volts: vec::Vec<f64> = (0..rows).map(f64::from).collect();
+        let mut metals = vec![1.0; volts.len()];
+        let mut doubles = vec![f64::NAN; volts.len()];
+        let run =
+            |metals: &[f64], doubles: &mut [f64]| (moody::ENTRY.array)(&[metals, &volts], &mut [doubles]);
+        assert_eq!(run(&metals, &mut doubles), Ok(()));
+        assert!(doubles.iter().zip(&volts).all(|(double, single)| *double == 2.0 * single));
+        assert_eq!(run(&[0.0], &mut doubles), Ok(()));
+        metals[300] = 2.0;
+        metals[301] = 7.0;
+        assert_eq!(run(&metals, &mut doubles), Err(AtIndex { index: Some(300), error: BRASS }));
+        assert!(run(&metals[..2], &mut doubles).is_err());
     }
 
     #[test]
@@ -209,5 +256,5 @@ fn symbols_agree_with_uom() {
         second: time::second;
         ampere_per_square_millimeter: uom::si::electric_current_density::ampere_per_square_millimeter;
     }
-    assert!(ENTRIES.len() == 1);
+    assert!(ENTRIES.len() == 2);
 }

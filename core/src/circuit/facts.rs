@@ -11,7 +11,7 @@ use crate::cable::{Conductor, adiabatic_k};
 use crate::citation::{Citation, Seen};
 use crate::device::{Polarity, Supply};
 use crate::error::Error;
-use crate::protection::{Guard, least_rating};
+use crate::protection::{Earthing, Guard, least_rating};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
 use crate::rules::{Ampacity, Check, Key};
 
@@ -41,6 +41,14 @@ pub(super) struct Facts<'a> {
 }
 
 impl Facts<'_> {
+    /// The term of the rule set: one for the American sets, one for the international ones.
+    fn term(&self, american: &'static str, international: &'static str) -> &'static str {
+        match self.run.rules.set().key {
+            Key::Us | Key::CraftUs => american,
+            Key::Iec | Key::CraftIso => international,
+        }
+    }
+
     pub fn admitted(&self, conductor: &Conductor) -> Option<Checked> {
         match self.run.rules.admits(conductor, self.run.moving) {
             Ok(()) => None,
@@ -109,10 +117,10 @@ impl Facts<'_> {
                 self.current.get::<ampere>(),
                 ampacity.corrected.get::<ampere>(),
                 "A",
-                match self.run.rules.set().key {
-                    Key::Iec => "design current Ib against Iz after all factors",
-                    _ => "design current against ampacity after all factors",
-                },
+                self.term(
+                    "design current against ampacity after all factors",
+                    "design current Ib against current-carrying capacity Iz after all factors",
+                ),
                 worst_citation(ampacity),
             ),
             Err(error) => not_tabulated(Check::Ampacity, "current against the conductor's table", *error),
@@ -174,8 +182,10 @@ impl Facts<'_> {
         if !device.family.data().overload {
             return None;
         }
-        let what =
-            "current at which the device has opened within its conventional time, against 1.45 × ampacity";
+        let what = self.term(
+            "current at which the device has surely opened, against 1.45 × ampacity",
+            "current I2 at which the device has surely opened, against 1.45 × Iz",
+        );
         let Some(times) = device.family.operating_ratio(device.rating) else {
             return Some(Checked::plain(
                 Check::OpensLate,
@@ -243,7 +253,10 @@ impl Facts<'_> {
 
     pub fn breaking(&self) -> Option<Checked> {
         let device = self.guard?.device;
-        let what = "breaking capacity against the greatest prospective current";
+        let what = self.term(
+            "interrupting rating against the greatest prospective current",
+            "breaking capacity against the greatest prospective current",
+        );
         Some(match (device.breaking, self.run.greatest_fault) {
             (Some(breaking), Some(fault)) => Checked::at_least(
                 Check::Breaking,
@@ -256,7 +269,7 @@ impl Facts<'_> {
             (None, _) => Checked::plain(
                 Check::Breaking,
                 Outcome::NotChecked,
-                "breaking capacity on DC is not stated",
+                self.term("interrupting rating on DC is not stated", "breaking capacity on DC is not stated"),
                 own("R6"),
             ),
             (_, None) => Checked::plain(
@@ -340,20 +353,21 @@ impl Facts<'_> {
     pub fn supply(&self) -> Option<Checked> {
         let device = self.guard?.device;
         let what = "voltage rating on DC against the highest voltage of the system";
-        Some(match device.supply {
-            Supply::AcOnly => Checked::plain(
+        let rated = device.supply.voltage(self.run.earthing == Earthing::Floating);
+        Some(match (rated, device.supply) {
+            (None, Supply::AcOnly) => Checked::plain(
                 Check::DeviceSupply,
                 Outcome::Failed,
                 "the device is rated for AC only; on DC its arc need not go out: use one rated for DC",
                 own("R6"),
             ),
-            Supply::NotStated => Checked::plain(
+            (None, _) => Checked::plain(
                 Check::DeviceSupply,
                 Outcome::NotChecked,
                 "voltage rating on DC is not stated",
                 own("R6"),
             ),
-            Supply::Dc(rated) => Checked::at_least(
+            (Some(rated), _) => Checked::at_least(
                 Check::DeviceSupply,
                 rated.get::<volt>(),
                 self.run.highest.get::<volt>(),

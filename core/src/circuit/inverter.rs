@@ -1,70 +1,45 @@
 //! The DC feed of an inverter: current at the lowest voltage, not at nominal (R3).
 
-use uom::si::electric_current::ampere;
-use uom::si::electric_potential::volt;
-use uom::si::power::watt;
-use uom::si::ratio::ratio;
-
-use crate::error::{Allowed, Error};
+use crate::catalogue::calculations;
+use crate::law::{inverter_input_current, power_current};
 use crate::quantity::{ElectricCurrent, ElectricPotential, Power, Ratio};
 
-/// What an inverter draws on its DC side.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct InverterFeed {
-    /// Power at its DC terminals, full load.
-    pub dc_power: Power,
-    /// Current by power over nominal voltage, no losses: the figure people carry in their heads; never for design.
-    pub nominal: ElectricCurrent,
-    /// Current at the lowest voltage and the efficiency there: the design current.
-    pub design: ElectricCurrent,
-}
-
-/// DC power and currents of an inverter at full load.
-///
-/// | input | unit | valid |
-/// | --- | --- | --- |
-/// | `power` | W | ≥ 0; AC side |
-/// | `efficiency` | 1 | > 0 … 1; at full power and lowest voltage |
-/// | `nominal`, `lowest` | V | > 0; `lowest` at its own terminals |
-///
-/// # Errors
-/// [`Error::OutOfRange`].
-///
-/// # Source
-/// I = P/(η·U). Checked against the inverter cases of `tests/reference/cases-conductors.toml`.
-///
-/// # Example
-/// ```
-/// # use ampwright::circuit::inverter_feed;
-/// # use uom::si::{f64::*, electric_current::ampere, electric_potential::volt, power::watt, ratio::ratio};
-/// let feed = inverter_feed(
-///     Power::new::<watt>(800.0),
-///     Ratio::new::<ratio>(0.85),
-///     ElectricPotential::new::<volt>(12.0),
-///     ElectricPotential::new::<volt>(10.5),
-/// )?;
-/// assert!((feed.nominal.get::<ampere>() - 66.7).abs() < 0.05);
-/// assert!((feed.design.get::<ampere>() - 89.6).abs() < 0.05);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn inverter_feed(
-    power: Power,
-    efficiency: Ratio,
-    nominal: ElectricPotential,
-    lowest: ElectricPotential,
-) -> Result<InverterFeed, Error> {
-    let within = |name, value: f64, unit, allowed, fits: bool| {
-        if fits && value.is_finite() { Ok(()) } else { Err(Error::OutOfRange { name, value, unit, allowed }) }
-    };
-    let (p, eta) = (power.get::<watt>(), efficiency.get::<ratio>());
-    let (un, ul) = (nominal.get::<volt>(), lowest.get::<volt>());
-    within("power", p, "W", Allowed::AtLeast(0.0), p >= 0.0)?;
-    within("efficiency", eta, "", Allowed::AboveUpTo(0.0, 1.0), eta > 0.0 && eta <= 1.0)?;
-    within("nominal", un, "V", Allowed::Above(0.0), un > 0.0)?;
-    within("lowest", ul, "V", Allowed::Above(0.0), ul > 0.0)?;
-    Ok(InverterFeed {
-        dc_power: Power::new::<watt>(p / eta),
-        nominal: ElectricCurrent::new::<ampere>(p / un),
-        design: ElectricCurrent::new::<ampere>(p / eta / ul),
-    })
+calculations! {
+    /// What an inverter draws on its DC side at full load.
+    ///
+    /// # Example
+    /// 800 W at 85 %, 12 V nominal, cut-off at 10.5 V:
+    /// ```
+    /// use ampwright::{circuit::inverter_feed, quantity::{parse, readable}};
+    /// let feed = inverter_feed(parse("800 W")?, parse("85 %")?, parse("12 V")?, parse("10.5 V")?)?;
+    /// assert_eq!(readable(feed.nominal).to_string(), "66.7 A");
+    /// assert_eq!(readable(feed.design).to_string(), "89.6 A");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn inverter_feed(
+        /// AC side, full load.
+        power: Power in watt [>= 0.0],
+        /// At full power and lowest voltage.
+        efficiency: Ratio in ratio [> 0.0 ..= 1.0],
+        /// Of the system.
+        nominal_voltage: ElectricPotential in volt [> 0.0],
+        /// At its own terminals, the lowest at which it still runs.
+        lowest_voltage: ElectricPotential in volt [> 0.0],
+    ) => InverterFeed {
+        /// Power at its DC terminals.
+        dc_power: Power in watt,
+        /// Current by power over nominal voltage, no losses: the figure people carry in their heads; never for design.
+        nominal: ElectricCurrent in ampere,
+        /// Current at the lowest voltage and the efficiency there: the design current.
+        design: ElectricCurrent in ampere,
+    }
+    formula "P_DC = P/η, I_nominal = P/U_nominal, I_design = P/(η·U_lowest)"
+    source "energy balance"
+    {
+        InverterFeed {
+            dc_power: power / efficiency,
+            nominal: power_current::formula(power, nominal_voltage),
+            design: inverter_input_current::formula(power, lowest_voltage, efficiency),
+        }
+    }
 }

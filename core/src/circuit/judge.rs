@@ -10,7 +10,7 @@ use super::facts::Facts;
 use super::run::{Demand, Run};
 use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
-use crate::network::deliver;
+use crate::network::line_delivery;
 use crate::protection::Guard;
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio, ThermodynamicTemperature,
@@ -26,6 +26,9 @@ pub struct Judgement {
     pub continuous: ElectricCurrent,
     /// Ampacity after all factors, where the set tabulates it.
     pub ampacity: Option<Ampacity>,
+    /// Temperature rating that picked the ampacity column, °C: the lowest of insulation, lugs, terminals and device
+    /// (under `us` the insulation's; the terminal's column is a check of its own).
+    pub counted_degC: f64,
     /// Conductor temperature at the design current.
     pub temperature: ThermodynamicTemperature,
     /// Resistance of the whole loop at that temperature, joints included.
@@ -131,6 +134,7 @@ pub fn judge(
         current,
         continuous,
         ampacity: None,
+        counted_degC: rating_degC,
         temperature,
         resistance,
         drop,
@@ -184,17 +188,10 @@ fn counted_rating(run: &Run, conductor: &Conductor, guard: Option<&Guard>) -> f6
     if run.rules.set().key == Key::Us {
         return insulation;
     }
-    let marked = run.terminal.map(|t| t.get::<degree_celsius>());
-    let device = guard.and_then(|g| g.terminal_degC);
-    let lowest = match (marked, device) {
-        (Some(a), Some(b)) => Some(a.min(b)),
-        (one, other) => one.or(other),
-    };
-    match (lowest, run.rules.unmarked_terminal_degC()) {
-        (Some(marked), _) => insulation.min(marked),
-        (None, Some(usual)) => insulation.min(usual),
-        (None, None) => insulation,
-    }
+    let usual = run.rules.unmarked_terminal_degC();
+    let terminal = run.terminal.map(|t| t.get::<degree_celsius>()).or(usual);
+    let device = guard.and_then(|g| g.terminal_degC.or(usual));
+    [terminal, device].into_iter().flatten().fold(insulation, f64::min)
 }
 
 /// Loop of a run at one conductor temperature: positive and negative, or the stated return, and the joints (R1, R9).
@@ -219,7 +216,7 @@ fn drawn(run: &Run, resistance: ElectricalResistance) -> Result<(ElectricCurrent
     Ok(match run.demand {
         Demand::Current { continuous, other } => (continuous, continuous + other),
         Demand::Power { power, continuous } => {
-            let current = deliver(run.beginning, resistance, power)?.current;
+            let current = line_delivery(run.beginning, resistance, power)?.current;
             (if continuous { current } else { ElectricCurrent::new::<ampere>(0.0) }, current)
         }
     })

@@ -6,9 +6,16 @@ mod inverter;
 mod judge;
 mod run;
 mod size;
+#[cfg(test)]
+mod tests;
+
+use crate::catalogue::Entry;
 
 pub use checked::{Checked, Numbers, Outcome, Relation};
 pub use inverter::{InverterFeed, inverter_feed};
 pub use judge::{Judgement, judge};
 pub use run::{Demand, Run};
 pub use size::{Governing, Rejected, SizedRun, size_run};
+
+/// Every calculation of this room, by file.
+pub const CATALOGUE: &[&[Entry]] = &[inverter::ENTRIES];

@@ -10,6 +10,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use crate::error::{Allowed, Error};
 use crate::network::Source;
+use crate::protection::Earthing;
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio, ThermodynamicTemperature,
 };
@@ -39,6 +40,8 @@ pub enum Demand {
 pub struct Run {
     /// Rule set with the user's overrides.
     pub rules: Rules,
+    /// Which pole is earthed: a floating system divides the poles of a device between both conductors.
+    pub earthing: Earthing,
     /// Nominal voltage of the system.
     pub nominal: ElectricPotential,
     /// Highest voltage that can stand: cold-compensated equalising or charge voltage.
@@ -108,6 +111,7 @@ impl Run {
     pub fn plain(rules: Rules, nominal: ElectricPotential, one_way: Length, demand: Demand) -> Self {
         Self {
             rules,
+            earthing: Earthing::Negative,
             nominal,
             highest: nominal,
             beginning: nominal,

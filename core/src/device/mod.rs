@@ -3,9 +3,16 @@
 mod conventional;
 mod data;
 mod family;
+mod operating;
 mod piece;
 mod rating;
 
+use crate::catalogue::Entry;
+
 pub use conventional::{Band, Start};
 pub use family::{Family, FamilyData};
+pub use operating::{ConventionalCurrents, continuous_current, conventional_currents};
 pub use piece::{Device, Polarity, Supply};
+
+/// Every calculation of this room, by file.
+pub const CATALOGUE: &[&[Entry]] = &[operating::ENTRIES];

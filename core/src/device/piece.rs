@@ -17,10 +17,34 @@ pub enum Polarity {
 pub enum Supply {
     /// Rated for DC up to this voltage (whole device, poles as wired).
     Dc(ElectricPotential),
+    /// Rated for DC up to this voltage for each pole, with so many poles in series.
+    PerPole(ElectricPotential, u8),
     /// Rated for AC only: refused on DC (R6).
     AcOnly,
     /// Not stated.
     NotStated,
+}
+
+impl Supply {
+    /// Greatest DC voltage it breaks; `None` where it is rated for AC only or nothing is stated.
+    ///
+    /// `shared`: the poles are divided between both conductors, as in a floating system. A fault to earth on each
+    /// side of the device then leaves only the poles of one conductor in series: half of them count.
+    ///
+    /// ```
+    /// # use ampwright::device::Supply;
+    /// # use uom::si::{f64::ElectricPotential, electric_potential::volt};
+    /// let two_poles = Supply::PerPole(ElectricPotential::new::<volt>(60.0), 2);
+    /// assert_eq!(two_poles.voltage(false), Some(ElectricPotential::new::<volt>(120.0)));
+    /// assert_eq!(two_poles.voltage(true), Some(ElectricPotential::new::<volt>(60.0)));
+    /// ```
+    pub fn voltage(self, shared: bool) -> Option<ElectricPotential> {
+        match self {
+            Self::Dc(whole) => Some(whole),
+            Self::PerPole(each, poles) => Some(each * f64::from(if shared { poles / 2 } else { poles })),
+            Self::AcOnly | Self::NotStated => None,
+        }
+    }
 }
 
 /// One overcurrent device as chosen or found.
@@ -43,6 +67,19 @@ pub struct Device {
 impl Device {
     /// Current it carries for hours: its rating, or eight tenths of it where the family gives no more and the
     /// device is not marked for 100 %. The 1.25 of `us` on continuous load is the same margin: never both.
+    ///
+    /// ```
+    /// # use ampwright::prelude::*;
+    /// let breaker = Device {
+    ///     family: Family::MoldedCase,
+    ///     rating: ElectricCurrent::new::<ampere>(100.0),
+    ///     supply: Supply::NotStated,
+    ///     breaking: None,
+    ///     polarity: Polarity::None,
+    ///     full_rated: false,
+    /// };
+    /// assert_eq!(breaker.continuous_current(), ElectricCurrent::new::<ampere>(80.0));
+    /// ```
     pub fn continuous_current(&self) -> ElectricCurrent {
         if self.full_rated { self.rating } else { self.rating * self.family.data().continuous_ratio }
     }

@@ -89,7 +89,12 @@ calculations! {
     { source_voltage * source_voltage / (4.0 * loop_resistance) }
 }
 
-fn no_solution(source: ElectricPotential, resistance: ElectricalResistance, power: Power) -> Error {
+/// That a line cannot carry a power, with the most it can.
+pub(crate) fn no_solution(
+    source: ElectricPotential,
+    resistance: ElectricalResistance,
+    power: Power,
+) -> Error {
     Error::NoSolution {
         asked_W: power.value,
         source_V: source.value,

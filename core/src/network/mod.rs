@@ -7,6 +7,11 @@ mod prospective;
 mod run;
 mod tree;
 
+use crate::catalogue::Entry;
+
 pub use prospective::{FaultNode, FaultState, prospective};
-pub use run::{Delivery, deliver};
+pub use run::{Delivery, line_delivery};
 pub use tree::{NodeLoad, NodeState, Source, TreeNode, solve};
+
+/// Every calculation of this room, by file.
+pub const CATALOGUE: &[&[Entry]] = &[run::ENTRIES];

@@ -205,8 +205,9 @@ mod tests {
         for k in 0..n {
             for row in k + 1..n {
                 let f = m[row][k] / m[k][k];
-                for c in k..=n {
-                    m[row][c] -= f * m[k][c];
+                let pivot_row = m[k].clone();
+                for (cell, above) in m[row].iter_mut().zip(pivot_row).skip(k) {
+                    *cell -= f * above;
                 }
             }
         }

@@ -1,82 +1,50 @@
 //! One line and one load that takes constant power: the closed form.
 
-use uom::si::electric_current::ampere;
-use uom::si::electric_potential::volt;
-use uom::si::electrical_resistance::ohm;
-use uom::si::power::watt;
-
+use crate::catalogue::calculations;
 use crate::error::{Allowed, Error};
-use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power, sqrt};
+use crate::law::{constant_power_current, no_solution, power_in_resistance};
+use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power};
 
-/// What reaches the far end of a line.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Delivery {
-    /// Current in the line.
-    pub current: ElectricCurrent,
-    /// Voltage at the load.
-    pub voltage: ElectricPotential,
-    /// Power lost in the line.
-    pub loss: Power,
-}
-
-/// Current and voltage at a constant-power load behind a resistance.
-///
-/// Of the two solutions the stable one, with the higher voltage, is given: V = (E + √(E² − 4·P·R))/2.
-///
-/// | input | unit | valid |
-/// | --- | --- | --- |
-/// | `source` | V | > 0; at the line's beginning |
-/// | `resistance` | Ω | ≥ 0; loop, joints included |
-/// | `power` | W | ≥ 0; taken at the load's terminals |
-///
-/// # Errors
-/// [`Error::OutOfRange`]; [`Error::NoSolution`] where the line cannot carry the power (P > E²/4R).
-///
-/// # Source
-/// E = V + R·P/V, from Ohm's and Joule's laws.
-///
-/// # Example
-/// ```
-/// # use ampwright::network::deliver;
-/// # use uom::si::{f64::*, electric_potential::volt, electrical_resistance::ohm, power::watt};
-/// let run = deliver(
-///     ElectricPotential::new::<volt>(21.0),
-///     ElectricalResistance::new::<ohm>(0.01),
-///     Power::new::<watt>(1000.0),
-/// )?;
-/// assert!((run.voltage.get::<volt>() - 20.5125).abs() < 1e-4);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn deliver(
-    source: ElectricPotential,
-    resistance: ElectricalResistance,
-    power: Power,
-) -> Result<Delivery, Error> {
-    let (e, r, p) = (source.get::<volt>(), resistance.get::<ohm>(), power.get::<watt>());
-    at_least("resistance", r, "ohm", 0.0)?;
-    at_least("power", p, "W", 0.0)?;
-    if !(e > 0.0 && e.is_finite()) {
-        return Err(Error::OutOfRange { name: "source", value: e, unit: "V", allowed: Allowed::Above(0.0) });
+calculations! {
+    /// What reaches a constant-power load behind a resistance, and what is lost on the way.
+    ///
+    /// Of the two solutions the stable one, with the higher voltage.
+    ///
+    /// # Example
+    /// 1 kW through 10 mΩ from 21 V:
+    /// ```
+    /// use ampwright::{network::line_delivery, quantity::{parse, readable}};
+    /// let run = line_delivery(parse("21 V")?, parse("10 mohm")?, parse("1 kW")?)?;
+    /// assert_eq!(readable(run.voltage).to_string(), "20.5 V");
+    /// assert_eq!(readable(run.loss).to_string(), "23.8 W");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn line_delivery(
+        /// At the line's beginning.
+        source: ElectricPotential in volt [> 0.0],
+        /// Of the loop, joints included.
+        resistance: ElectricalResistance in ohm [>= 0.0],
+        /// Taken at the load's terminals.
+        power: Power in watt [>= 0.0],
+    ) => Delivery {
+        /// Current in the line.
+        current: ElectricCurrent in ampere,
+        /// Voltage at the load.
+        voltage: ElectricPotential in volt,
+        /// Power lost in the line.
+        loss: Power in watt,
     }
-    let root = e * e - 4.0 * p * r;
-    if root < 0.0 {
-        return Err(Error::NoSolution { asked_W: p, source_V: e, loop_ohm: r, most_W: e * e / (4.0 * r) });
+    where (4.0 * resistance * power <= source * source) => (no_solution(source, resistance, power))
+    formula "U = R·I + P/I for the smaller current, P_loss = I²·R"
+    source "as `constant_power_current`; Joule's law"
+    {
+        let point = constant_power_current::formula(source, resistance, power);
+        Delivery {
+            current: point.current,
+            voltage: point.load_voltage,
+            loss: power_in_resistance::formula(point.current, resistance),
+        }
     }
-    let v = 0.5 * (e + sqrt(root));
-    let i = p / v;
-    if !(v.is_finite() && i.is_finite()) {
-        return Err(Error::OutOfRange {
-            name: "source",
-            value: e,
-            unit: "V",
-            allowed: Allowed::Between(0.0, 1e150),
-        });
-    }
-    Ok(Delivery {
-        current: ElectricCurrent::new::<ampere>(i),
-        voltage: ElectricPotential::new::<volt>(v),
-        loss: Power::new::<watt>(i * i * r),
-    })
 }
 
 /// Checks a number that may be zero.

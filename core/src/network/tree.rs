@@ -101,7 +101,7 @@ const SETTLED: f64 = 1e-14;
 /// };
 /// let mut state = [NodeState::default(); 4];
 /// solve(source, &tree, &mut state)?;
-/// assert!((state[2].voltage.get::<volt>() - 23.8825).abs() < 1e-4);
+/// assert!((state[2].voltage.get::<volt>() - 23.8828).abs() < 1e-4);
 /// # Ok::<(), ampwright::Error>(())
 /// ```
 pub fn solve(root: Source, tree: &[TreeNode], states: &mut [NodeState]) -> Result<u32, Error> {
@@ -239,7 +239,7 @@ pub(super) fn positive(name: &'static str, value: f64, unit: &'static str) -> Re
 #[cfg(test)]
 mod tests {
     extern crate std;
-    use super::super::deliver;
+    use super::super::line_delivery;
     use super::*;
     use proptest::prelude::*;
     use std::vec;
@@ -271,7 +271,7 @@ mod tests {
             let tree = [node(0, 0.0, 0.0, 0.0, 0.0), node(0, r, p, 0.0, 0.0)];
             let mut state = [NodeState::default(); 2];
             solve(root(e, 0.0), &tree, &mut state).unwrap();
-            let closed = deliver(
+            let closed = line_delivery(
                 ElectricPotential::new::<volt>(e),
                 ElectricalResistance::new::<ohm>(r),
                 Power::new::<watt>(p),

@@ -176,7 +176,7 @@ impl Rules {
     /// let rules = Rules::named("craft_us")?;
     /// let sheathed_from_post = rules.unfused_length(true, true).ok_or("none")?;
     /// assert!((sheathed_from_post.value.get::<inch>() - 72.0).abs() < 1e-12);
-    /// assert!(Rules::named("us")?.unfused_length(false, true).is_none());
+    /// assert!(Rules::named("craft_iso")?.unfused_length(true, true).is_none());
     /// # Ok::<(), Box<dyn core::error::Error>>(())
     /// ```
     pub fn unfused_length(&self, sheathed: bool, from_battery_post: bool) -> Option<Limit<Length>> {

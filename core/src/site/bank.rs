@@ -28,7 +28,7 @@ pub(super) fn ends(bank: &BankEntry) -> Ends {
         (Some(a), Some(b)) => Some(if a <= b { (a, b) } else { (b, a) }),
         (a, b) => a.or(b).map(|r| (r, r)),
     };
-    let estimate = short_circuit_estimate(bank.chemistry, bank.capacity).ok().flatten();
+    let estimate = short_circuit_estimate(bank.chemistry, bank.capacity).ok();
     let by_thumb = stated.is_none() && estimate.is_some();
     let resistance: Option<(ElectricalResistance, ElectricalResistance)> =
         stated.or_else(|| estimate.map(|e| (full / e.upper, full / e.usual)));

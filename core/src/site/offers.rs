@@ -9,7 +9,7 @@ use uom::si::electrical_resistance::ohm;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::model::{CircuitEntry, DeviceEntry, Site};
+use super::model::{CircuitEntry, DeviceEntry, Pole, Site};
 use super::plan::{Draft, Fitted};
 use super::read::Problem;
 use crate::cable::{
@@ -27,7 +27,11 @@ pub(super) fn complete(stated: &DeviceEntry) -> Option<Guard> {
         device: Device {
             family,
             rating,
-            supply: stated.supply,
+            // With poles in both conductors, a fault to earth leaves only one conductor's in series.
+            supply: match stated.supply.voltage(true) {
+                Some(half) if stated.pole == Pole::Both => Supply::Dc(half),
+                _ => stated.supply,
+            },
             breaking: stated.breaking,
             polarity: stated.polarity,
             full_rated: stated.full_rated,

@@ -18,7 +18,7 @@ use crate::cable::{Class, Coating, Conductor, Material};
 use crate::circuit::Outcome;
 use crate::device::{Polarity, Supply};
 use crate::protection::Guard;
-use crate::rules::{Installation, Space};
+use crate::rules::{Installation, Key, Space};
 
 /// Stands under every report (DESIGN 11).
 const CAUTIONS: [&str; 5] = [
@@ -164,14 +164,15 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         for factor in &a.factors {
             {
                 // Writing to a String cannot fail.
-                let _ = write!(words, " × {} {}", factor.value, factor.name);
+                let _ = write!(words, " × {} {}", digits(factor.value), factor.name);
             }
         }
         {
             // Writing to a String cannot fail.
             let _ = write!(words, " = {} A", digits(a.corrected.get::<ampere>()));
         }
-        row(f, "capacity", &words)?;
+        let american = matches!(c.run.rules.set().key, Key::Us | Key::CraftUs);
+        row(f, if american { "ampacity" } else { "capacity" }, &words)?;
     }
     if let Some(remark) = &c.practice {
         row(f, "practice", remark)?;
@@ -195,6 +196,14 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     }
     if let (true, Some(above)) = (c.devices.is_empty(), &c.guarded_by) {
         row(f, "device", &format!("none of its own; guarded by that of \"{}\"", printable(above)))?;
+    }
+    if let Some(d) = c.devices.first()
+        && let Ok(least) =
+            c.run.rules.protective_conductor(c.positive.size, d.guard.device.rating, c.positive.material)
+    {
+        let words =
+            format!("where there is a protective conductor, at least {} ({})", least.value, least.citation);
+        row(f, "protective", &words)?;
     }
     let least = j
         .least_fault
@@ -297,21 +306,19 @@ pub(super) fn conductor_words(conductor: &Conductor) -> String {
 pub(super) fn device_words(guard: &Guard) -> String {
     let device = guard.device;
     let mut words = format!("{} {} A", device.family, digits(device.rating.get::<ampere>()));
-    match device.supply {
-        Supply::Dc(rated) => {
-            // Writing to a String cannot fail.
-            let _ = write!(words, ", {} V DC", digits(rated.get::<volt>()));
+    // Writing to a String cannot fail.
+    let _ = match device.supply {
+        Supply::Dc(rated) => write!(words, ", {} V DC", digits(rated.get::<volt>())),
+        Supply::PerPole(each, poles) => {
+            write!(words, ", {poles} poles of {} V DC", digits(each.get::<volt>()))
         }
-        Supply::AcOnly => words.push_str(", AC only"),
-        Supply::NotStated => words.push_str(", DC voltage not stated"),
-    }
-    match device.breaking {
-        Some(amps) => {
-            // Writing to a String cannot fail.
-            let _ = write!(words, ", breaks {} kA", digits(amps.get::<ampere>() / 1000.0));
-        }
-        None => words.push_str(", breaking capacity not stated"),
-    }
+        Supply::AcOnly => write!(words, ", AC only"),
+        Supply::NotStated => write!(words, ", DC voltage not stated"),
+    };
+    let _ = match device.breaking {
+        Some(amps) => write!(words, ", breaks {} kA", digits(amps.get::<ampere>() / 1000.0)),
+        None => write!(words, ", what it breaks on DC not stated"),
+    };
     if device.polarity == Polarity::Marked {
         words.push_str(", polarity marked");
     }

@@ -14,14 +14,14 @@ use super::keys::{
     CLASS_NUMBERS, COATING, COATING_WORDS, COUNT, CRANKING, CURRENT, DC_VOLTAGE, DEVICE, DIVERSITY, DROP,
     END, END_WORDS, FAMILY, FROM, FROM_LUG, FROM_SOURCE, FULL_RATED, INSTALLED, INSTALLED_WORDS, INSULATION,
     JOINT, JOINT_KIND, JOINT_WORDS, LET_THROUGH_KEY, MATERIAL, MATERIAL_WORDS, MOVING, NAME, NEGATIVE_LENGTH,
-    NEGATIVE_SIZE, ONE_WAY, PART_KEY, PART_KIND, PART_WORDS, POLARISED, POLE, POLE_WORDS, POSITIVE_LENGTH,
-    RATING, RESISTANCE, RETURN, RETURN_RESISTANCE, RETURN_WORDS, SHEATHED, SIZE, SPACE, SPACE_WORDS,
-    TERMINAL, TERMINAL_RANGE, TO, TO_LUG,
+    NEGATIVE_SIZE, ONE_WAY, PART_KEY, PART_KIND, PART_WORDS, POLARISED, POLE, POLE_VOLTAGE, POLE_WORDS,
+    POLES, POSITIVE_LENGTH, RATING, RESISTANCE, RETURN, RETURN_RESISTANCE, RETURN_WORDS, SHEATHED, SIZE,
+    SPACE, SPACE_WORDS, TERMINAL, TERMINAL_RANGE, TO, TO_LUG,
 };
 use super::log::Log;
 use crate::cable::{Class, Coating, Material};
 use crate::device::{Polarity, Supply};
-use crate::quantity::{ConductorSize, Length};
+use crate::quantity::{ConductorSize, ElectricPotential, Length};
 use crate::rules::Space;
 use crate::site::model::{CircuitEntry, DeviceEntry, End, JointEntry, Part, Pole, Return};
 
@@ -130,7 +130,7 @@ impl<'d> Circuits<'d> {
         let name = if entry.has(&NAME) { entry.name() } else { Some(self.next_name()) };
         let family = entry.parsed(&FAMILY);
         let rating = entry.quantity(&RATING);
-        let supply = supply(entry);
+        let supply = device_supply(entry);
         let breaking = entry.quantity(&BREAKING);
         let polarity = polarity(entry);
         let full_rated = entry.flag(&FULL_RATED, false);
@@ -264,6 +264,44 @@ fn devices<'d>(entry: &mut Entry<'d, '_>) -> (bool, Vec<Found<'d>>) {
         return (true, Vec::new());
     }
     (false, entry.sections(&DEVICE, &CIRCUIT_DEVICE))
+}
+
+/// What supply a device is rated for: as a part is, or by the pole.
+pub(super) fn device_supply(entry: &mut Entry<'_, '_>) -> Supply {
+    let whole = supply(entry);
+    let each: Option<ElectricPotential> = entry.quantity(&POLE_VOLTAGE);
+    let poles = entry.count(&POLES);
+    match (each, poles) {
+        (None, None) => whole,
+        (Some(each), Some(poles)) if whole == Supply::NotStated => {
+            // The range of the key ends at 4.
+            Supply::PerPole(each, u8::try_from(poles).unwrap_or(1))
+        }
+        (Some(_), Some(_)) => {
+            let sentence =
+                "pole_voltage stands beside dc_voltage or ac_only; keep the one on the label".to_owned();
+            entry.problem(&POLE_VOLTAGE, sentence);
+            Supply::NotStated
+        }
+        (Some(_), None) => {
+            // A value that was refused has its problem already.
+            if !entry.has(&POLES) {
+                entry.problem(
+                    &POLE_VOLTAGE,
+                    "pole_voltage needs poles beside it, such as poles = 2".to_owned(),
+                );
+            }
+            Supply::NotStated
+        }
+        (None, Some(_)) => {
+            if !entry.has(&POLE_VOLTAGE) {
+                let sentence =
+                    "poles needs pole_voltage beside it, such as pole_voltage = \"60 V\"".to_owned();
+                entry.problem(&POLES, sentence);
+            }
+            whole
+        }
+    }
 }
 
 /// What supply a device or part is rated for.

@@ -256,16 +256,6 @@ impl<'d> Plan<'d> {
                 log.push(wire.at, wire.place(), sentence);
                 continue;
             }
-            if let Some(first) = first.filter(|_| node.kind == Kind::Board) {
-                let sentence = format!(
-                    "board {} is fed by circuit {} already; join the banks by a circuit of their own, \
-                     then feed the board from one of them",
-                    Quoted(node.name),
-                    first.label(log)
-                );
-                log.push(wire.at, wire.place(), sentence);
-                continue;
-            }
             if let Some(feed) = feeds.get_mut(to) {
                 *feed = Some(number);
             }

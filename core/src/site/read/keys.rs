@@ -148,6 +148,8 @@ pub(super) const PART_KEY: Key = key("part", "sections [[circuit.part]]", "", AN
 pub(super) const FAMILY: Key = key("family", "a family of devices", "\"gG\"", ANY);
 pub(super) const RATING: Key = key("rating", "a current", "\"100 A\"", AMPERES);
 pub(super) const DC_VOLTAGE: Key = key("dc_voltage", "a voltage", "\"80 V\"", VOLTS);
+pub(super) const POLE_VOLTAGE: Key = key("pole_voltage", "a voltage", "\"60 V\"", VOLTS);
+pub(super) const POLES: Key = key("poles", "a whole number", "2", count(1.0, 4.0));
 pub(super) const AC_ONLY: Key = flag("ac_only");
 pub(super) const BREAKING: Key = key("breaking", "a current", "\"10 kA\"", FAULT);
 pub(super) const POLARISED: Key = flag("polarised");
@@ -275,6 +277,8 @@ pub(super) const CIRCUIT_DEVICE: Section = Section::new(
         &FAMILY,
         &RATING,
         &DC_VOLTAGE,
+        &POLE_VOLTAGE,
+        &POLES,
         &AC_ONLY,
         &BREAKING,
         &POLARISED,
@@ -303,6 +307,8 @@ pub(super) const STOCK_DEVICE: Section = Section::new(
     &[
         &RATINGS,
         &DC_VOLTAGE,
+        &POLE_VOLTAGE,
+        &POLES,
         &AC_ONLY,
         &BREAKING,
         &POLARISED,

@@ -1,6 +1,6 @@
 //! What can be bought or lies on the shelf.
 
-use super::circuits::{metal, polarity, supply, terminal_range};
+use super::circuits::{device_supply, metal, polarity, terminal_range};
 use super::entry::{Entry, Found};
 use super::keys::{
     BREAKING, CABLE, FAMILY, FULL_RATED, INSULATION, LENGTH, LET_THROUGH_KEY, LUG, PRICE, RATINGS, SHEATHED,
@@ -54,7 +54,7 @@ fn cable(entry: &mut Entry<'_, '_>) -> Option<StockCable> {
 fn device(entry: &mut Entry<'_, '_>) -> Option<StockDevice> {
     let family = entry.parsed(&FAMILY);
     let ratings = entry.quantities(&RATINGS);
-    let supply = supply(entry);
+    let supply = device_supply(entry);
     let breaking = entry.quantity(&BREAKING);
     let polarity = polarity(entry);
     let full_rated = entry.flag(&FULL_RATED, false);
