@@ -101,9 +101,10 @@ impl fmt::Display for Document {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         writeln!(f, "format = 1")?;
         for (header, lines) in &self.0 {
-            match SINGLE.contains(header) {
-                true => writeln!(f, "\n[{header}]")?,
-                false => writeln!(f, "\n[[{header}]]")?,
+            if SINGLE.contains(header) {
+                writeln!(f, "\n[{header}]")?;
+            } else {
+                writeln!(f, "\n[[{header}]]")?;
             }
             for line in lines {
                 writeln!(f, "{line}")?;
