@@ -171,11 +171,7 @@ fn adiabatic_k_of_conductors_at_their_rating() {
                     row.check(column, k.value, if k.citation.seen == Seen::Recalled { 0.5 } else { 0.0 });
                     held += usize::from(id == "iec-adiabatic-k-pe-core");
                 } else if row.number(column).is_some() {
-                    row.check(
-                        column,
-                        between(material, initial, end),
-                        0.5,
-                    );
+                    row.check(column, between(material, initial, end), 0.5);
                 }
             }
         }
