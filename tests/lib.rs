@@ -5,6 +5,11 @@ use std::collections::BTreeMap;
 use serde::Deserialize;
 use toml::Value;
 
+/// The README, so that its Rust is run with the doc tests.
+#[cfg(doctest)]
+#[doc = include_str!("../README.md")]
+pub struct Readme;
+
 /// The cases and tables of one reference file, by their id.
 pub struct Reference {
     /// Worked examples.

@@ -4,7 +4,7 @@
 //! Exit status 0: nothing stands against the site; 1: a danger, a nonconformity or a check not made; 2: bad input.
 
 use std::fs::{self, File};
-use std::io::Read;
+use std::io::{Read, Write};
 use std::process::ExitCode;
 
 use ampwright::site;
@@ -28,7 +28,8 @@ fn main() -> ExitCode {
     };
     match site::read_bytes(&bytes).and_then(|document| site::inspect(&document)) {
         Ok(report) => {
-            print!("{report}");
+            // A reader that closes the pipe early has seen enough.
+            let _ = write!(std::io::stdout().lock(), "{report}");
             ExitCode::from(report.exit_code())
         }
         Err(problems) => {

@@ -1,7 +1,86 @@
 //! Low-voltage DC power where there is no grid: cables, fuses, banks, computed with units and reasons.
 //!
-//! Nothing is computed without its reason, and a check without data is `not checked`, never passed.
-//! Local codes and licensed practice decide; the text of each standard governs.
+//! A quantity of the wrong kind does not compile, a number out of range is an error that names it, and a result
+//! carries its reason: which limit decided, from which table of which edition, and whether that page was seen. What
+//! cannot be checked for want of a datum is *not checked*, never passed.
+//!
+//! # A worked case
+//!
+//! 20 A for hours, 12 m away from a 24 V board, flexible PVC cable in conduit, after IEC 60364:
+//!
+//! ```
+//! use ampwright::prelude::*;
+//!
+//! let rules = Rules::named("iec")?;
+//! let run = Run::plain(
+//!     rules,
+//!     ElectricPotential::new::<volt>(24.0),
+//!     Length::new::<meter>(12.0), // the route: there and back is counted inside
+//!     Demand::Current {
+//!         continuous: ElectricCurrent::new::<ampere>(20.0),
+//!         other: ElectricCurrent::new::<ampere>(0.0),
+//!     },
+//! );
+//! let cables: Vec<_> = rules
+//!     .sizes()
+//!     .iter()
+//!     .map(|&size| Conductor::flexible_copper(size, rules.usual_insulation()))
+//!     .collect();
+//! let fuses = Offer::standard(
+//!     Family::Gg,
+//!     ElectricPotential::new::<volt>(80.0),
+//!     ElectricCurrent::new::<kiloampere>(25.0),
+//! );
+//!
+//! let sized = size_run(&run, &cables, &[fuses])?;
+//! assert_eq!(sized.conductor.size.to_string(), "10 mm2");
+//!
+//! // Why not 6 mm2: the drop.
+//! let refused = sized.rejected.last().and_then(|r| r.failed).expect("smaller sizes were tried");
+//! assert_eq!(refused.numbers().to_string(), "7.15 %, at most 5 %");
+//!
+//! // No fault current was stated, so the fuse's breaking capacity is not checked, and that is said.
+//! assert!(sized.judgement.checks.iter().any(|c| c.outcome == Outcome::NotChecked));
+//! # Ok::<(), Error>(())
+//! ```
+//!
+//! The guide works the same run by hand, check by check: `guide::run_sizing`. A whole site, with shared feeders and
+//! several banks, is read from a file by [`site::read`] and answered by [`site::inspect`].
+//!
+//! # Features
+//!
+//! | feature | gives | without it |
+//! | --- | --- | --- |
+//! | `site` (default; takes `std`) | the site file, its checks, the report | every law, table, check and solver is still there |
+//! | `std` (takes `alloc`) | the standard library's square root; calculations on arrays | runs without an operating system |
+//! | `alloc` | nothing of its own yet | runs without a heap: nothing below `site` allocates |
+//!
+//! Each of these sets is tested by itself.
+//!
+//! # Rooms
+//!
+//! A room uses only what stands on the floors below it.
+//!
+//! | floor | rooms |
+//! | --- | --- |
+//! | 6 | `site`: document, report |
+//! | 4 | [`network`] volts and amperes in a tree, [`protection`] devices and their place, [`circuit`] judging and sizing one run |
+//! | 3 | [`rules`] rule sets as data |
+//! | 2 | [`cable`], [`device`], [`battery`]: the physical things |
+//! | 1 | [`law`] Ohm, power, energy, sources; [`catalogue`] how calculations are declared |
+//! | 0 | [`quantity`] units and their text form, [`error`], [`citation`] |
+//!
+//! [`prelude`] brings together what everyday work needs.
+//!
+//! # Cautions
+//!
+//! - A bank stores enough energy to melt tools, and drives thousands of amperes through a fault.
+//! - A DC arc does not go out by itself: nothing is opened under load that is not made for it.
+//! - Lead-acid and nickel banks give off hydrogen while they charge.
+//! - Isolate, secure against switching on, and prove dead before work.
+//! - Local codes and licensed practice decide; the text of each standard governs, in the edition in force. Which
+//!   edition was applied stands in [`rules::RuleSet::edition`]; a figure marked *recalled* came from memory and wants
+//!   its page looked up.
 #![no_std]
 #![forbid(unsafe_code)]
 #![deny(missing_docs)]
@@ -36,6 +115,21 @@ pub mod protection;
 // Floor 6
 #[cfg(feature = "site")]
 pub mod site;
+// Above them
+pub mod prelude;
+
+/// The longer pages, whose examples are tested with the rest.
+#[cfg(doc)]
+pub mod guide {
+    #[doc = include_str!("../guide/first_hour.md")]
+    pub mod first_hour {}
+    #[doc = include_str!("../guide/run_sizing.md")]
+    pub mod run_sizing {}
+    #[doc = include_str!("../guide/site_file.md")]
+    pub mod site_file {}
+    #[doc = include_str!("../guide/rule_sets.md")]
+    pub mod rule_sets {}
+}
 
 pub use error::Error;
 

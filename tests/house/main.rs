@@ -6,6 +6,7 @@
 mod arrows;
 mod interface;
 mod package;
+mod readme;
 mod source;
 mod tree;
 mod versions;

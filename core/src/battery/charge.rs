@@ -79,6 +79,12 @@ const NICKEL_CADMIUM_BANDS: [TemperatureBand; 1] = [band(-20.0, 45.0, 0.2, 0.2, 
 /// The chemistry's bands of charge limits, coldest first, without gaps.
 ///
 /// Rates equal `charge-rates` and `lfp-temperature-limits` in `tests/reference/battery.toml` (tested there).
+///
+/// # Example
+/// ```
+/// use ampwright::battery::{Chemistry, charge_bands};
+/// assert_eq!(charge_bands(Chemistry::Lfp).first().map(|band| band.from_degC), Some(0.0)); // none below
+/// ```
 pub const fn charge_bands(chemistry: Chemistry) -> &'static [TemperatureBand] {
     match chemistry {
         Chemistry::Flooded => &FLOODED_BANDS,

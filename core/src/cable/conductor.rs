@@ -53,6 +53,22 @@ pub struct Conductor {
     pub insulation: Insulation,
 }
 
+impl Conductor {
+    /// Plain copper of class 5, the usual conductor of this trade. Change the fields that differ.
+    ///
+    /// # Example
+    /// ```
+    /// # use ampwright::cable::{Coating, Conductor};
+    /// let cable = Conductor::flexible_copper("16 mm2".parse()?, "PVC 70 degC".parse()?);
+    /// let tinned = Conductor { coating: Coating::Tinned, ..cable };
+    /// assert_eq!(tinned.size.to_string(), "16 mm2");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    pub const fn flexible_copper(size: ConductorSize, insulation: Insulation) -> Self {
+        Self { size, material: Material::Copper, class: Class::Flexible, coating: Coating::Plain, insulation }
+    }
+}
+
 impl Choice for Material {
     const ALL: &'static [Self] = &[Self::Copper, Self::Aluminium, Self::CopperCladAluminium];
     const WORDS: &'static [&'static str] = &["copper", "aluminium", "copper_clad_aluminium"];

@@ -46,6 +46,14 @@ impl FromStr for Stud {
 ///
 /// Only its own size: a smaller hole does not go over, and a larger one bears on a rim too narrow to carry
 /// the current and the torque. Common practice, no source.
+///
+/// # Example
+/// ```
+/// use ampwright::cable::lug_fits;
+/// assert!(lug_fits("M8".parse()?, "M8".parse()?));
+/// assert!(!lug_fits("M10".parse()?, "M8".parse()?));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn lug_fits(lug: Stud, stud: Stud) -> bool {
     lug == stud
 }

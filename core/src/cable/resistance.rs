@@ -108,6 +108,19 @@ pub fn linear_resistance(
 ///
 /// # Errors
 /// As [`linear_resistance`].
+///
+/// # Example
+/// ```
+/// # use ampwright::cable::{Conductor, linear_resistance_with_source};
+/// # use ampwright::quantity::ThermodynamicTemperature;
+/// # use uom::si::thermodynamic_temperature::degree_celsius;
+/// let cable = Conductor::flexible_copper("16 mm2".parse()?, "PVC 70 degC".parse()?);
+/// let at_20 = ThermodynamicTemperature::new::<degree_celsius>(20.0);
+/// let (resistance, source) = linear_resistance_with_source(&cable, at_20)?;
+/// assert!((resistance.value * 1000.0 - 1.21).abs() < 1e-9); // Ω/km
+/// assert!(source.citation.document.starts_with("IEC 60228"));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn linear_resistance_with_source(
     conductor: &Conductor,
     temperature: ThermodynamicTemperature,

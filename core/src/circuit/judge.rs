@@ -184,17 +184,10 @@ fn counted_rating(run: &Run, conductor: &Conductor, guard: Option<&Guard>) -> f6
     if run.rules.set().key == Key::Us {
         return insulation;
     }
-    let marked = run.terminal.map(|t| t.get::<degree_celsius>());
-    let device = guard.and_then(|g| g.terminal_degC);
-    let lowest = match (marked, device) {
-        (Some(a), Some(b)) => Some(a.min(b)),
-        (one, other) => one.or(other),
-    };
-    match (lowest, run.rules.unmarked_terminal_degC()) {
-        (Some(marked), _) => insulation.min(marked),
-        (None, Some(usual)) => insulation.min(usual),
-        (None, None) => insulation,
-    }
+    let usual = run.rules.unmarked_terminal_degC();
+    let terminal = run.terminal.map(|t| t.get::<degree_celsius>()).or(usual);
+    let device = guard.and_then(|g| g.terminal_degC.or(usual));
+    [terminal, device].into_iter().flatten().fold(insulation, f64::min)
 }
 
 /// Loop of a run at one conductor temperature: positive and negative, or the stated return, and the joints (R1, R9).

@@ -67,6 +67,19 @@ pub struct Device {
 impl Device {
     /// Current it carries for hours: its rating, or eight tenths of it where the family gives no more and the
     /// device is not marked for 100 %. The 1.25 of `us` on continuous load is the same margin: never both.
+    ///
+    /// ```
+    /// # use ampwright::prelude::*;
+    /// let breaker = Device {
+    ///     family: Family::MoldedCase,
+    ///     rating: ElectricCurrent::new::<ampere>(100.0),
+    ///     supply: Supply::NotStated,
+    ///     breaking: None,
+    ///     polarity: Polarity::None,
+    ///     full_rated: false,
+    /// };
+    /// assert_eq!(breaker.continuous_current(), ElectricCurrent::new::<ampere>(80.0));
+    /// ```
     pub fn continuous_current(&self) -> ElectricCurrent {
         if self.full_rated { self.rating } else { self.rating * self.family.data().continuous_ratio }
     }

@@ -5,7 +5,7 @@ use uom::si::ratio::ratio;
 
 use crate::device::{Device, Family, Polarity, Supply};
 use crate::error::Error;
-use crate::quantity::{ConductorSize, ElectricCurrent, Ratio};
+use crate::quantity::{ConductorSize, ElectricCurrent, ElectricPotential, Ratio};
 
 /// A device with what is known of its unit: what a run's checks need beyond the family.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -41,6 +41,36 @@ pub struct Offer<'a> {
     pub terminal_range: Option<(ConductorSize, ConductorSize)>,
     /// Marked temperature rating of the terminals, °C.
     pub terminal_degC: Option<f64>,
+}
+
+impl Offer<'_> {
+    /// All standard ratings of a family, rated for DC up to a voltage, with a stated breaking capacity; not marked
+    /// for polarity, and nothing more known. Change the fields that are.
+    ///
+    /// # Example
+    /// ```
+    /// # use ampwright::{device::Family, protection::Offer};
+    /// # use uom::si::{f64::*, electric_current::kiloampere, electric_potential::volt};
+    /// let fuses = Offer::standard(
+    ///     Family::Gg,
+    ///     ElectricPotential::new::<volt>(80.0),
+    ///     ElectricCurrent::new::<kiloampere>(25.0),
+    /// );
+    /// assert!(fuses.let_through_A2s.is_none() && !fuses.full_rated);
+    /// ```
+    pub const fn standard(family: Family, upto: ElectricPotential, breaking: ElectricCurrent) -> Self {
+        Self {
+            family,
+            ratings_A: &[],
+            supply: Supply::Dc(upto),
+            breaking: Some(breaking),
+            polarity: Polarity::None,
+            full_rated: false,
+            let_through_A2s: None,
+            terminal_range: None,
+            terminal_degC: None,
+        }
+    }
 }
 
 /// Least rating that carries a current: continuous part over the share a device carries for hours, plus the rest.
@@ -83,8 +113,29 @@ pub fn least_rating(
 
 /// The smallest rating of an offer that is not below a need.
 ///
+/// `need` is asked for each rating, since what is needed may depend on the device (a family's 80 %, a device that
+/// carries 100 %): [`least_rating`] gives it. A need of NaN is met by none. Whether the choice also protects the
+/// conductor, and breaks what the place can deliver, [`crate::circuit`] checks.
+///
 /// # Errors
 /// [`Error::NoneFits`] where the offer ends below the need.
+///
+/// # Source
+/// Rules R4 and R22 of the design: choosing from standard ratings is a step of its own.
+///
+/// # Example
+/// An inverter that draws 89.6 A in its worst hour, under a set with the factor 1.25:
+/// ```
+/// # use ampwright::{device::Family, protection::{Offer, choose, least_rating}};
+/// # use uom::si::{f64::*, electric_current::ampere, electric_potential::volt, ratio::ratio};
+/// let amperes = ElectricCurrent::new::<ampere>;
+/// let fuses = Offer::standard(Family::ClassT, ElectricPotential::new::<volt>(125.0), amperes(20_000.0));
+/// let carries = Ratio::new::<ratio>(fuses.family.data().continuous_ratio);
+/// let need = least_rating(amperes(89.6), amperes(0.0), carries, fuses.full_rated, 1.25);
+/// let guard = choose(&fuses, |_| need)?;
+/// assert_eq!(guard.device.rating, amperes(125.0));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn choose(offer: &Offer<'_>, need: impl Fn(&Device) -> ElectricCurrent) -> Result<Guard, Error> {
     let ratings = if offer.ratings_A.is_empty() { offer.family.ratings_A() } else { offer.ratings_A };
     for &rating in ratings {

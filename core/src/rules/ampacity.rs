@@ -52,6 +52,29 @@ impl Rules {
     /// assert_eq!(ampacity.corrected.get::<ampere>(), 21.0);
     /// # Ok::<(), ampwright::Error>(())
     /// ```
+    ///
+    /// 90 °C insulation at 50 °C ambient under each set. The craft sets derate by √((Tc − 50)/(Tc − 30)), Tc 90 °C, and
+    /// 85 °C in the column of `craft_iso` for 85 to 90 °C:
+    /// ```
+    /// use ampwright::prelude::*;
+    ///
+    /// let amperes = |rules: &str, size: &str, installation| -> Result<f64, Error> {
+    ///     let ampacity = Rules::named(rules)?.ampacity(&AmpacityQuery {
+    ///         size: size.parse()?,
+    ///         rating_degC: 90.0,
+    ///         installation,
+    ///         ambient: ThermodynamicTemperature::new::<degree_celsius>(50.0),
+    ///         space: Space::Ordinary,
+    ///         bundled_conductors: 2,
+    ///     })?;
+    ///     Ok((ampacity.corrected.get::<ampere>() * 10.0).round() / 10.0)
+    /// };
+    /// assert_eq!(amperes("us", "6 AWG", Installation::Conduit)?, 61.5); // 75 A × 0.82
+    /// assert_eq!(amperes("iec", "16 mm2", Installation::Conduit)?, 82.0); // 100 A × 0.82
+    /// assert_eq!(amperes("craft_us", "6 AWG", Installation::Loom)?, 81.6); // 100 A × 0.816
+    /// assert_eq!(amperes("craft_iso", "16 mm2", Installation::Loom)?, 79.8); // 100 A × 0.798
+    /// # Ok::<(), Error>(())
+    /// ```
     pub fn ampacity(&self, query: &AmpacityQuery) -> Result<Ampacity, Error> {
         let rating = query.rating_degC;
         if !rating.is_finite() {

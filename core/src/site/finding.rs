@@ -147,6 +147,27 @@ const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'stati
     }
 }
 
+/// The name of a check that could not be made.
+const fn unmade(check: Check) -> &'static str {
+    match check {
+        Check::Conductor => "conductor-not-checked",
+        Check::LeastSize => "least-size-not-checked",
+        Check::TerminalColumn => "terminal-column-not-checked",
+        Check::Ampacity => "ampacity-not-checked",
+        Check::DeviceCarries => "device-load-not-checked",
+        Check::DeviceProtects => "device-against-ampacity-not-checked",
+        Check::OpensLate => "opening-current-not-checked",
+        Check::Drop => "drop-not-checked",
+        Check::LoadVoltage => "load-voltage-not-checked",
+        Check::StartVoltage => "start-voltage-not-checked",
+        Check::Breaking => "breaking-capacity-not-checked",
+        Check::LeastFault => "least-fault-not-checked",
+        Check::Withstand => "withstand-not-checked",
+        Check::DeviceSupply => "device-supply-not-checked",
+        Check::Termination => "termination-not-checked",
+    }
+}
+
 /// The finding of a check that was not passed; `None` for one that was.
 pub(super) fn of_check(
     checked: &Checked,
@@ -172,7 +193,7 @@ pub(super) fn of_check(
     Some(Finding {
         severity,
         rule,
-        slug,
+        slug: if severity == Severity::NotChecked { unmade(checked.check) } else { slug },
         place: place.to_string(),
         line,
         text,

@@ -1,5 +1,6 @@
 //! Flows of the plan: currents and voltages in the worst hour, prospective currents at both ends of each circuit.
 
+use alloc::collections::BTreeMap;
 use alloc::vec;
 use alloc::vec::Vec;
 
@@ -11,8 +12,8 @@ use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::bank::Ends;
-use super::graph::{Graph, Item, Tree};
-use super::model::{LoadKind, Return, Site};
+use super::graph::{Graph, Item, Tree, path_to};
+use super::model::{BankEntry, LoadKind, Return, Site};
 use super::plan::sources;
 use crate::cable::{Conductor, least_linear_resistance, linear_resistance};
 use crate::error::Error;
@@ -38,8 +39,8 @@ pub(super) struct Flow {
     /// Nominal and highest voltage of its bank, V.
     pub nominal: f64,
     pub highest: f64,
-    /// A bank hangs at the far end or beyond it.
-    pub between_sources: bool,
+    /// A bank stands at one of its ends: a battery cable.
+    pub at_bank: bool,
     /// Of what hangs at the far end.
     pub usage: LoadUse,
     pub least_voltage: Option<f64>,
@@ -63,10 +64,26 @@ pub(super) type Wired = (Conductor, Conductor, ElectricalResistance);
 pub(super) struct Flows {
     /// In the order of the document.
     pub circuits: Vec<Flow>,
-    /// The first collapse met: tree, node, error.
-    pub collapse: Option<(usize, usize, Error)>,
+    /// The first collapse met: the circuits from the source to it, and the error.
+    pub collapse: Option<(Vec<usize>, Error)>,
     /// Circuits where the network collapsed.
     pub collapsed: Vec<usize>,
+    /// For each circuit the one before it on the way from its source.
+    pub before: Vec<Option<usize>>,
+}
+
+impl Flows {
+    /// Circuits from the source to a circuit, itself included.
+    pub fn path(&self, circuit: usize) -> Vec<usize> {
+        let mut path = vec![circuit];
+        let mut here = circuit;
+        while let Some(before) = self.before.get(here).copied().flatten() {
+            path.push(before);
+            here = before;
+        }
+        path.reverse();
+        path
+    }
 }
 
 impl Flows {
@@ -79,43 +96,53 @@ impl Flows {
     ) -> Self {
         let banks = sources(site);
         let ohms = |index: usize| loop_ohms(site, wired, index, temperatures.get(index).copied().flatten());
-        let mut flows =
-            Self { circuits: vec![none(); site.circuits.len()], collapse: None, collapsed: Vec::new() };
-        for (number, tree) in trees.iter().enumerate() {
-            let Some(Item::Bank(root)) = tree.nodes.first().map(|n| n.item) else { continue };
-            let Some(bank) = site.banks.get(root) else { continue };
+        let mut flows = Self {
+            circuits: vec![none(); site.circuits.len()],
+            collapse: None,
+            collapsed: Vec::new(),
+            before: vec![None; site.circuits.len()],
+        };
+        for tree in trees {
+            let Some(bank) = root_bank(site, tree) else { continue };
             flows.describe(site, tree, bank.nominal.get::<volt>(), bank.highest.get::<volt>(), &ohms);
-            let low = solve_tree(site, tree, bank.nominal, bank.cut_off, &ohms);
-            let low = low.unwrap_or_else(|error| {
-                flows.note_collapse(number, tree, error);
-                linear(site, tree, bank.nominal, bank.cut_off, &ohms)
+            flows.take_faults(site, tree, &banks, wired);
+        }
+        let links = graph.drawn_by_links();
+        let mut volts = BTreeMap::new();
+        for tree in &graph.islands() {
+            let Some(bank) = root_bank(site, tree) else { continue };
+            let solver = Solver { site, links: &links, nominal: bank.nominal, ohms: &ohms };
+            let low = solver.solve(tree, bank.cut_off).unwrap_or_else(|error| {
+                flows.note_collapse(tree, error);
+                solver.linear(tree, bank.cut_off)
             });
             flows.take_low(site, tree, &low, bank.cut_off.get::<volt>());
+            volts.extend(tree.nodes.iter().zip(&low).map(|(n, s)| (n.item, s.voltage.get::<volt>())));
             if any_resistive(site)
-                && let Ok(high) = solve_tree(site, tree, bank.nominal, bank.highest, &ohms)
+                && let Ok(high) = solver.solve(tree, bank.highest)
             {
                 flows.take_currents(tree, &high);
             }
-            // Each further bank may have to feed the whole tree alone.
+            // Each further bank may have to feed the whole island alone.
             for other in tree.nodes.iter().skip(1).filter_map(|n| match n.item {
                 Item::Bank(other) => Some(other),
                 _ => None,
             }) {
-                let (Some(turned), Some(bank)) = (graph.tree_from(other), site.banks.get(other)) else {
+                let (Some(turned), Some(bank)) = (graph.island_from(other), site.banks.get(other)) else {
                     continue;
                 };
-                let solved = solve_tree(site, &turned, bank.nominal, bank.cut_off, &ohms)
-                    .unwrap_or_else(|_| linear(site, &turned, bank.nominal, bank.cut_off, &ohms));
+                let solved = solver
+                    .solve(&turned, bank.cut_off)
+                    .unwrap_or_else(|_| solver.linear(&turned, bank.cut_off));
                 flows.take_currents(&turned, &solved);
             }
-            flows.take_faults(site, tree, &banks, wired);
         }
+        flows.take_links(site, graph, trees, &volts);
         // Stated currents and the user's own diversity.
         for (flow, circuit) in flows.circuits.iter_mut().zip(&site.circuits) {
             flow.current *= circuit.diversity;
             if let Some(stated) = circuit.current.map(|a| a.get::<ampere>()) {
-                // Between two sources nobody but the user knows what flows; elsewhere the loads tell the least.
-                flow.current = if flow.between_sources { stated } else { flow.current.max(stated) };
+                flow.current = flow.current.max(stated);
             }
         }
         flows
@@ -130,29 +157,28 @@ impl Flows {
         highest: f64,
         ohms: &impl Fn(usize) -> f64,
     ) {
-        let mut sums = vec![(0.0, 0.0, false); tree.nodes.len()];
+        let mut sums = vec![(0.0, 0.0); tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate().rev() {
             let (continuous, whole) = nominal_watts(site, node.item, nominal);
             let Some(own) = sums.get_mut(index) else { continue };
             own.0 += continuous;
             own.1 += whole;
-            own.2 |= matches!(node.item, Item::Bank(_));
             let own = *own;
             if index > 0
                 && let Some(parent) = sums.get_mut(node.parent)
             {
                 parent.0 += own.0;
                 parent.1 += own.1;
-                parent.2 |= own.2;
             }
         }
-        for (node, (continuous, whole, bank)) in tree.nodes.iter().zip(sums) {
+        for (node, (continuous, whole)) in tree.nodes.iter().zip(sums) {
             let Some(index) = node.circuit else { continue };
             let Some(flow) = self.circuits.get_mut(index) else { continue };
             flow.nominal = nominal;
             flow.highest = highest;
             flow.ohms = ohms(index);
-            flow.between_sources = bank;
+            let above = tree.nodes.get(node.parent).map(|p| p.item);
+            flow.at_bank = [above, Some(node.item)].iter().any(|i| matches!(i, Some(Item::Bank(_))));
             // Where nothing is known of the use (bank to bank), all of it counts as continuous.
             flow.continuous_share = if whole > 0.0 { continuous / whole } else { 1.0 };
             match node.item {
@@ -176,12 +202,36 @@ impl Flows {
         }
     }
 
-    fn note_collapse(&mut self, number: usize, tree: &Tree, error: Error) {
+    /// A link carries what the document states, from whichever side stands higher.
+    fn take_links(&mut self, site: &Site, graph: &Graph, trees: &[Tree], volts: &BTreeMap<Item, f64>) {
+        for tree in trees {
+            let Some(bank) = root_bank(site, tree) else { continue };
+            let cut_off = bank.cut_off.get::<volt>();
+            for node in &tree.nodes {
+                let Some((circuit, &amps)) = node.circuit.and_then(|c| Some((c, graph.links.get(&c)?)))
+                else {
+                    continue;
+                };
+                let above = tree.nodes.get(node.parent).and_then(|p| volts.get(&p.item)).copied();
+                let above = above.unwrap_or(cut_off);
+                if let Some(flow) = self.circuits.get_mut(circuit) {
+                    flow.current = amps;
+                    flow.continuous_share = 1.0;
+                    flow.beginning = above.max(0.01 * cut_off);
+                    flow.drop_before = (cut_off - above).clamp(0.0, cut_off);
+                }
+            }
+        }
+    }
+
+    fn note_collapse(&mut self, tree: &Tree, error: Error) {
         let node = match error {
             Error::Collapse { node, .. } => node,
             _ => 0,
         };
-        self.collapse.get_or_insert((number, node, error));
+        if self.collapse.is_none() {
+            self.collapse = Some((path_to(tree, node), error));
+        }
         if let Some(circuit) = tree.nodes.get(node).and_then(|n| n.circuit) {
             self.collapsed.push(circuit);
         }
@@ -195,6 +245,9 @@ impl Flows {
             let above = states.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
             let upstream = path_ohms.get(node.parent).copied().unwrap_or(0.0);
             let Some(flow) = self.circuits.get_mut(circuit) else { continue };
+            if let Some(slot) = self.before.get_mut(circuit) {
+                *slot = tree.nodes.get(node.parent).and_then(|p| p.circuit);
+            }
             // A collapsed network may fall below zero here; a run begins at some positive voltage.
             flow.beginning = above.max(0.01 * emf);
             flow.drop_before = (emf - above).clamp(0.0, emf);
@@ -273,7 +326,7 @@ const fn none() -> Flow {
         ohms: 0.0,
         nominal: 0.0,
         highest: 0.0,
-        between_sources: false,
+        at_bank: false,
         usage: LoadUse::Other,
         least_voltage: None,
         load_terminal: None,
@@ -332,51 +385,59 @@ fn node_load(
     node
 }
 
-fn solve_tree(
-    site: &Site,
-    tree: &Tree,
-    nominal: ElectricPotential,
-    emf: ElectricPotential,
-    ohms: &impl Fn(usize) -> f64,
-) -> Result<Vec<NodeState>, Error> {
-    run_solver(site, tree, nominal, emf, ohms, None)
+fn root_bank<'a>(site: &'a Site, tree: &Tree) -> Option<&'a BankEntry> {
+    match tree.nodes.first()?.item {
+        Item::Bank(root) => site.banks.get(root),
+        _ => None,
+    }
 }
 
-/// With constant powers as constant currents: always has a solution, and stands in where there is none.
-fn linear(
-    site: &Site,
-    tree: &Tree,
+/// What the solution of an island needs.
+struct Solver<'a, F> {
+    site: &'a Site,
+    links: &'a BTreeMap<Item, f64>,
     nominal: ElectricPotential,
-    emf: ElectricPotential,
-    ohms: &impl Fn(usize) -> f64,
-) -> Vec<NodeState> {
-    run_solver(site, tree, nominal, emf, ohms, Some(emf))
-        .unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
+    ohms: &'a F,
 }
 
-fn run_solver(
-    site: &Site,
-    tree: &Tree,
-    nominal: ElectricPotential,
-    emf: ElectricPotential,
-    ohms: &impl Fn(usize) -> f64,
-    as_current: Option<ElectricPotential>,
-) -> Result<Vec<NodeState>, Error> {
-    let nodes: Vec<TreeNode> = tree
-        .nodes
-        .iter()
-        .map(|n| TreeNode {
-            parent: n.parent,
-            resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
-            load: node_load(site, n.item, nominal, as_current),
-            source: None,
-        })
-        .collect();
-    let mut states = vec![NodeState::default(); nodes.len()];
-    // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
-    let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
-    solve(root, &nodes, &mut states)?;
-    Ok(states)
+impl<F: Fn(usize) -> f64> Solver<'_, F> {
+    fn solve(&self, tree: &Tree, emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
+        self.run(tree, emf, None)
+    }
+
+    /// With constant powers as constant currents: always has a solution, and stands in where there is none.
+    fn linear(&self, tree: &Tree, emf: ElectricPotential) -> Vec<NodeState> {
+        self.run(tree, emf, Some(emf)).unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
+    }
+
+    fn run(
+        &self,
+        tree: &Tree,
+        emf: ElectricPotential,
+        as_current: Option<ElectricPotential>,
+    ) -> Result<Vec<NodeState>, Error> {
+        let nodes: Vec<TreeNode> = tree
+            .nodes
+            .iter()
+            .map(|n| {
+                let mut load = node_load(self.site, n.item, self.nominal, as_current);
+                if let Some(&amps) = self.links.get(&n.item) {
+                    load.current += ElectricCurrent::new::<ampere>(amps);
+                }
+                TreeNode {
+                    parent: n.parent,
+                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, self.ohms)),
+                    load,
+                    source: None,
+                }
+            })
+            .collect();
+        let mut states = vec![NodeState::default(); nodes.len()];
+        // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
+        let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
+        solve(root, &nodes, &mut states)?;
+        Ok(states)
+    }
 }
 
 /// Loop of a circuit at a conductor temperature, or at the insulation's rating where none is known yet.

@@ -203,7 +203,7 @@ pub struct CircuitEntry {
     pub cranking: bool,
     /// `return`.
     pub way_back: Return,
-    /// `current = "100 A"`: stated design current in place of what loads tell between two banks; elsewhere the greater counts.
+    /// `current = "100 A"`: stated design current in place of what the loads tell where a bank stands on either side; elsewhere the greater counts.
     pub current: Option<ElectricCurrent>,
     /// `diversity = 0.7`: the user's own factor on the sum of loads (R16); 1 if absent.
     pub diversity: f64,

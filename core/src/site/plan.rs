@@ -16,9 +16,10 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::bank;
 use super::flow::{Flow, Flows};
-use super::graph::{Graph, Tree};
+use super::graph::{Graph, Item, Tree};
 use super::model::{CircuitEntry, Return, Site};
 use super::offers::{Offers, complete, joints};
+use super::reach::Reach;
 use super::read::{Problem, Problems};
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
@@ -119,18 +120,21 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
     let feeding = feeding_ends(site, &trees);
 
     // Each step enlarges at least one circuit; none is enlarged more often than there are sizes.
-    let most = offers.sizes.len() * site.circuits.len() + 2;
+    // Then each far end gets at most one device.
+    let most = (2 * offers.sizes.len() + 1) * site.circuits.len() + 3;
     let mut temperatures: Vec<Option<f64>> = vec![None; site.circuits.len()];
-    let mut settled = false;
+    let (mut shared_found, mut settled) = (false, false);
+    // Far ends of designed circuits that no device further away guards well enough.
+    let mut far_devices = vec![false; site.circuits.len()];
     for _ in 0..=most {
         let conductors: Vec<(Conductor, Conductor, ElectricalResistance)> =
             drafts.iter().map(|d| (d.positive, d.negative, d.joints)).collect();
         let flows = Flows::new(site, &graph, &trees, &conductors, &temperatures);
-        if relieve_collapse(&flows, &trees, &mut drafts, &offers) {
+        if relieve_collapse(&flows, &mut drafts, &offers) {
             settled = false;
             continue;
         }
-        let planned = match judge_all(site, &trees, &offers, &drafts, &feeding, &flows) {
+        let planned = match judge_all(site, &trees, &offers, &drafts, &feeding, &far_devices, &flows) {
             Ok(planned) => planned,
             Err(problem) => return Err(Problems(vec![problem], 0)),
         };
@@ -141,8 +145,15 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
             .iter()
             .map(|p| p.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>()))
             .collect();
-        match enlarge(site, &trees, &offers, &mut drafts, &planned)? {
+        match enlarge(site, &offers, &mut drafts, &planned, &flows)? {
             true => settled = false,
+            // Shared runs are found; what hangs on them alone starts anew beside them, and grows no more than it must.
+            false if !shared_found => {
+                shared_found = true;
+                settled = false;
+                restart_leaves(&trees, &offers, &mut drafts);
+            }
+            false if add_far_devices(site, &trees, &planned, &mut far_devices) => settled = false,
             // Once more with the temperatures and devices of this pass: what is reported is what was judged.
             false if !settled => settled = true,
             false => return Ok(Plan { trees, circuits: planned, collapsed: flows.collapsed }),
@@ -160,17 +171,32 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
 
 /// Where the network collapses: enlarges the designed run of the greatest resistance on the path; `false` where nothing
 /// collapsed, or nothing on the path can grow.
-fn relieve_collapse(flows: &Flows, trees: &[Tree], drafts: &mut [Draft], offers: &Offers) -> bool {
-    let Some((tree, node, error)) = flows.collapse else { return false };
-    let path = trees.get(tree).map(|t| path_to(t, node)).unwrap_or_default();
+fn relieve_collapse(flows: &Flows, drafts: &mut [Draft], offers: &Offers) -> bool {
+    let Some((path, error)) = &flows.collapse else { return false };
     let mut worst: Option<(usize, f64)> = None;
-    for &circuit in &path {
+    for &circuit in path {
         let ohms = flows.circuits.get(circuit).map_or(0.0, |f| f.ohms);
         if can_grow(drafts, offers, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
             worst = Some((circuit, ohms));
         }
     }
-    worst.is_some_and(|(circuit, _)| grow(circuit, drafts, offers, Reason::Error(error)))
+    worst.is_some_and(|(circuit, _)| grow(circuit, drafts, offers, Reason::Error(*error)))
+}
+
+/// Puts designed circuits that feed no board or bank back to the smallest size on offer.
+fn restart_leaves(trees: &[Tree], offers: &Offers, drafts: &mut [Draft]) {
+    let Some(first) = offers.sizes.first() else { return };
+    for node in trees.iter().flat_map(|t| &t.nodes) {
+        if matches!(node.item, Item::Load(_) | Item::Inverter(_))
+            && let Some(draft) = node.circuit.and_then(|c| drafts.get_mut(c))
+            && draft.offered.is_some()
+        {
+            draft.offered = Some(0);
+            draft.positive = *first;
+            draft.negative = *first;
+            draft.refused.clear();
+        }
+    }
 }
 
 /// Whether a circuit is designed and a larger size is on offer.
@@ -190,27 +216,12 @@ fn grow(circuit: usize, drafts: &mut [Draft], offers: &Offers, reason: Reason) -
     true
 }
 
-/// Circuits from the root to a node.
-fn path_to(tree: &Tree, mut node: usize) -> Vec<usize> {
-    let mut path = Vec::new();
-    while let Some(here) = tree.nodes.get(node) {
-        match here.circuit {
-            Some(circuit) => path.push(circuit),
-            None => break,
-        }
-        node = here.parent;
-    }
-    path.reverse();
-    path
-}
-
 /// Ends of each circuit that can feed, in the circuit's own direction.
 fn feeding_ends(site: &Site, trees: &[Tree]) -> Vec<Feeds> {
     let mut all = vec![Feeds::default(); site.circuits.len()];
     for tree in trees {
         let parents: Vec<usize> = tree.nodes.iter().map(|n| n.parent).collect();
-        let sources: Vec<bool> =
-            tree.nodes.iter().map(|n| matches!(n.item, super::graph::Item::Bank(_))).collect();
+        let sources: Vec<bool> = tree.nodes.iter().map(|n| matches!(n.item, Item::Bank(_))).collect();
         let mut ends = vec![Feeds::default(); tree.nodes.len()];
         if feeds(&parents, &sources, &mut ends).is_err() {
             continue;
@@ -230,6 +241,7 @@ fn judge_all(
     offers: &Offers,
     drafts: &[Draft],
     feeding: &[Feeds],
+    far_devices: &[bool],
     flows: &Flows,
 ) -> Result<Vec<Option<Planned>>, Problem> {
     let mut planned: Vec<Option<Planned>> = Vec::new();
@@ -245,11 +257,13 @@ fn judge_all(
                 let planned = planned.get(above)?.as_ref()?;
                 if planned.fitted.is_empty() { planned.guarded_by } else { Some(above) }
             });
+            // A bank at the far end feeds at once; a board may be guarded by the devices of what feeds it.
+            let far = matches!(node.item, Item::Bank(_)) || far_devices.get(index).copied().unwrap_or(false);
             let done = judge_one(
                 site,
                 offers,
                 &planned,
-                &Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream },
+                &Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream, far },
             )
             .map_err(|error| Problem {
                 line: circuit.line,
@@ -272,6 +286,8 @@ struct Task<'a> {
     flow: Flow,
     reversed: bool,
     upstream: Option<usize>,
+    /// A designed circuit gets a device at its far end too.
+    far: bool,
 }
 
 fn judge_one(
@@ -280,7 +296,7 @@ fn judge_one(
     planned: &[Option<Planned>],
     task: &Task<'_>,
 ) -> Result<Planned, Error> {
-    let &Task { index, circuit, draft, ends, flow, reversed, upstream } = task;
+    let &Task { index, circuit, draft, ends, flow, reversed, upstream, far } = task;
     let run = run_of(site, circuit, draft, &flow);
     let bare = judge(&run, &draft.positive, &draft.negative, None)?;
     // The device at the end that the source feeds comes first; further ones see their own fault currents.
@@ -293,7 +309,7 @@ fn judge_one(
         }
         seen
     };
-    let fitted = fit(circuit, index, offers, &at, draft, &bare, ends, reversed);
+    let fitted = fit(circuit, index, offers, &at, draft, &bare, (ends, far), reversed);
     let mut guarded_by = None;
     let judgement = match (fitted.first(), upstream) {
         (Some(first), _) => judge(&at(first.end), &draft.positive, &draft.negative, Some(&first.guard))?,
@@ -362,7 +378,7 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
         space: circuit.space,
         ambient: circuit.ambient.unwrap_or(site.ambient.1),
         bundled_conductors: circuit.bundled,
-        moving: circuit.moving,
+        moving: circuit.moving || flow.at_bank,
         terminal: lowest(circuit.terminal, flow.load_terminal),
         usage: flow.usage,
         drop: circuit.drop,
@@ -393,30 +409,22 @@ fn fit(
     run_at: &dyn Fn(End) -> Run,
     draft: &Draft,
     bare: &Judgement,
-    ends: Feeds,
+    (ends, far): (Feeds, bool),
     reversed: bool,
 ) -> Vec<Fitted> {
     let mut fitted = Vec::new();
     if circuit.devices.is_empty() {
         let order = if reversed { [End::To, End::From] } else { [End::From, End::To] };
-        for end in order {
+        for (place, end) in order.into_iter().enumerate() {
             let feeding = if end == End::From { ends.from } else { ends.to };
             if feeding
+                && (place == 0 || far)
                 && !circuit.no_device
                 && let Some(guard) = offers.best(&run_at(end), draft, bare, None)
             {
-                let suffix = if ends.from && ends.to {
-                    if end == End::From { " at from" } else { " at to" }
-                } else {
-                    ""
-                };
-                fitted.push(Fitted {
-                    name: format!("Q{}{suffix}", index + 1),
-                    guard,
-                    end,
-                    entry: None,
-                    designed: true,
-                });
+                let kind = if guard.device.family.data().is_fuse { "fuse" } else { "breaker" };
+                let name = format!("{kind} {}{}", index + 1, if place == 0 { "" } else { "b" });
+                fitted.push(Fitted { name, guard, end, entry: None, designed: true });
             }
         }
         return fitted;
@@ -446,71 +454,95 @@ fn fit(
 /// Enlarges what fails; `true` where something grew.
 fn enlarge(
     site: &Site,
-    trees: &[Tree],
     offers: &Offers,
     drafts: &mut [Draft],
     planned: &[Option<Planned>],
+    flows: &Flows,
 ) -> Result<bool, Problems> {
     let mut grew = false;
     let mut problems = Vec::new();
-    let own_drop = |circuit: usize| {
-        planned.get(circuit).and_then(|p| p.as_ref()).map_or(0.0, |p| p.judgement.drop.get::<volt>())
+    // Volts won by the next size for the metal it takes: ρ·I·l·(1/A − 1/A') over (A' − A)·l. Growing the best of these
+    // first spreads the metal over a path as evenly as the sizes allow (A goes with √I).
+    let worth = |drafts: &[Draft], circuit: usize| {
+        let amps = planned
+            .get(circuit)
+            .and_then(|p| p.as_ref())
+            .map_or(0.0, |p| p.judgement.current.get::<ampere>());
+        let areas = drafts.get(circuit).and_then(|d| {
+            let next = offers.sizes.get(d.offered? + 1)?;
+            Some(d.positive.size.area_mm2() * next.size.area_mm2())
+        });
+        areas.map_or(0.0, |product| amps / product)
     };
-    for tree in trees {
-        for (index, node) in tree.nodes.iter().enumerate() {
-            let Some(circuit) = node.circuit else { continue };
-            let Some(Some(p)) = planned.get(circuit) else { continue };
-            let failed = |p: &Planned, path: bool| {
-                p.judgement
-                    .checks
-                    .iter()
-                    .chain(p.further.iter().flat_map(|j| j.checks.iter()))
-                    .find(|c| c.outcome == Outcome::Failed && path == is_of_path(c.check))
-                    .copied()
-            };
-            // What a larger conductor of this circuit mends.
-            if let Some(check) = failed(p, false).filter(|c| mended_by_size(c.check))
-                && p.designed()
-            {
-                if grow(circuit, drafts, offers, Reason::Check(check)) {
-                    grew = true;
-                } else {
-                    problems.push(cannot_serve(site, circuit, &check));
-                }
-                continue;
+    for (circuit, planned) in planned.iter().enumerate() {
+        let Some(p) = planned else { continue };
+        let failed = |path: bool| {
+            p.judgement
+                .checks
+                .iter()
+                .chain(p.further.iter().flat_map(|j| j.checks.iter()))
+                .find(|c| c.outcome == Outcome::Failed && path == is_of_path(c.check))
+                .copied()
+        };
+        // What a larger conductor of this circuit mends.
+        if let Some(check) = failed(false).filter(|c| mended_by_size(c.check))
+            && p.designed()
+        {
+            if grow(circuit, drafts, offers, Reason::Check(check)) {
+                grew = true;
+            } else {
+                problems.push(cannot_serve(site, circuit, &check));
             }
-            // What a larger conductor anywhere on the path mends: the one that loses most grows.
-            if let Some(check) = failed(p, true) {
-                let path = path_to(tree, index);
-                if !path
-                    .iter()
-                    .any(|&c| planned.get(c).and_then(|p| p.as_ref()).is_some_and(Planned::designed))
-                {
-                    continue;
-                }
-                let mut worst: Option<(usize, f64)> = None;
-                for &c in &path {
-                    if can_grow(drafts, offers, c) && worst.is_none_or(|(_, most)| own_drop(c) > most) {
-                        worst = Some((c, own_drop(c)));
-                    }
-                }
-                match worst {
-                    Some((c, _)) => {
-                        let reason =
-                            if c == circuit { Reason::Check(check) } else { Reason::Path(check, circuit) };
-                        grew |= grow(c, drafts, offers, reason);
-                        // One enlargement of a path at a time: the next pass sees its effect.
-                        if c != circuit {
-                            return Ok(true);
-                        }
-                    }
-                    None if p.designed() => problems.push(cannot_serve(site, circuit, &check)),
-                    None => {}
-                }
+            continue;
+        }
+        // What a larger conductor anywhere on the path mends: the one grows that wins most for its metal.
+        let Some(check) = failed(true) else { continue };
+        let path = flows.path(circuit);
+        let mut worst: Option<(usize, f64)> = None;
+        for &c in path.iter().filter(|&&c| can_grow(drafts, offers, c)) {
+            let gain = worth(drafts, c);
+            if worst.is_none_or(|(_, most)| gain > most) {
+                worst = Some((c, gain));
             }
+        }
+        match worst {
+            Some((c, _)) if c == circuit => grew |= grow(c, drafts, offers, Reason::Check(check)),
+            // A shared run grows once in a pass: the next pass sees what it won.
+            Some((c, _)) => return Ok(grow(c, drafts, offers, Reason::Path(check, circuit))),
+            None if p.designed() => problems.push(cannot_serve(site, circuit, &check)),
+            None => {}
         }
     }
     if problems.is_empty() { Ok(grew) } else { Err(Problems(problems, 0)) }
+}
+
+/// Notes the far ends of designed circuits that need a device of their own; `true` where one was added.
+fn add_far_devices(
+    site: &Site,
+    trees: &[Tree],
+    planned: &[Option<Planned>],
+    far_devices: &mut [bool],
+) -> bool {
+    let reach = Reach::new(site, trees, planned);
+    let mut added = false;
+    for (((circuit, planned), needed), &passed) in
+        site.circuits.iter().zip(planned).zip(far_devices.iter_mut()).zip(&reach.far)
+    {
+        let Some(p) = planned else { continue };
+        if *needed || !p.feeds.to || !p.feeds.from || circuit.no_device || !circuit.devices.is_empty() {
+            continue;
+        }
+        let limit = p
+            .judgement
+            .ampacity
+            .as_ref()
+            .map_or(0.0, |a| site.rules.device_limit(p.positive.size, a.corrected).most.get::<ampere>());
+        if passed > limit {
+            *needed = true;
+            added = true;
+        }
+    }
+    added
 }
 
 /// Whether a larger conductor anywhere on the path mends a failed check.

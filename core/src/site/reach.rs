@@ -5,9 +5,9 @@ use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
 
-use super::graph::Item;
+use super::graph::{Item, Tree};
 use super::model::Site;
-use super::plan::Plan;
+use super::plan::Planned;
 
 /// What all devices of a side together let pass towards each circuit, A: infinite where a source is not guarded.
 pub(super) struct Reach {
@@ -18,17 +18,17 @@ pub(super) struct Reach {
 }
 
 impl Reach {
-    pub fn new(site: &Site, plan: &Plan) -> Self {
+    pub fn new(site: &Site, trees: &[Tree], circuits: &[Option<Planned>]) -> Self {
         let mut reach = Self { far: vec![0.0; site.circuits.len()], near: vec![0.0; site.circuits.len()] };
         let rating = |circuit: usize| {
-            plan.circuits
+            circuits
                 .get(circuit)
                 .and_then(|p| p.as_ref())
                 .and_then(|p| p.fitted.iter().map(|f| f.guard.device.rating.get::<ampere>()).reduce(f64::min))
                 .unwrap_or(f64::INFINITY)
         };
         let source = |item| if matches!(item, Item::Bank(_)) { f64::INFINITY } else { 0.0 };
-        for tree in &plan.trees {
+        for tree in trees {
             // Upwards: what comes out of each node towards its parent.
             let mut out: Vec<f64> = tree.nodes.iter().map(|n| source(n.item)).collect();
             for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {

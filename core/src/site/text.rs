@@ -18,7 +18,7 @@ use crate::cable::{Class, Coating, Conductor, Material};
 use crate::circuit::Outcome;
 use crate::device::{Polarity, Supply};
 use crate::protection::Guard;
-use crate::rules::{Installation, Space};
+use crate::rules::{Installation, Key, Space};
 
 /// Stands under every report (DESIGN 11).
 const CAUTIONS: [&str; 5] = [
@@ -164,14 +164,15 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         for factor in &a.factors {
             {
                 // Writing to a String cannot fail.
-                let _ = write!(words, " × {} {}", factor.value, factor.name);
+                let _ = write!(words, " × {} {}", digits(factor.value), factor.name);
             }
         }
         {
             // Writing to a String cannot fail.
             let _ = write!(words, " = {} A", digits(a.corrected.get::<ampere>()));
         }
-        row(f, "capacity", &words)?;
+        let american = matches!(c.run.rules.set().key, Key::Us | Key::CraftUs);
+        row(f, if american { "ampacity" } else { "capacity" }, &words)?;
     }
     if let Some(remark) = &c.practice {
         row(f, "practice", remark)?;
@@ -195,6 +196,14 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     }
     if let (true, Some(above)) = (c.devices.is_empty(), &c.guarded_by) {
         row(f, "device", &format!("none of its own; guarded by that of \"{}\"", printable(above)))?;
+    }
+    if let Some(d) = c.devices.first()
+        && let Ok(least) =
+            c.run.rules.protective_conductor(c.positive.size, d.guard.device.rating, c.positive.material)
+    {
+        let words =
+            format!("where there is a protective conductor, at least {} ({})", least.value, least.citation);
+        row(f, "protective", &words)?;
     }
     let least = j
         .least_fault

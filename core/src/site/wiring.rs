@@ -50,7 +50,7 @@ impl Findings {
 /// All findings of a plan, gravest first, in the order of the document within.
 pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
     let mut found = Findings(Vec::new());
-    let reach = Reach::new(site, plan);
+    let reach = Reach::new(site, &plan.trees, &plan.circuits);
     let ends = ends(&plan.trees, site.circuits.len());
     for (index, circuit) in site.circuits.iter().enumerate() {
         let Some(Some(planned)) = plan.circuits.get(index) else { continue };
@@ -128,8 +128,8 @@ impl Place<'_> {
     /// The checks of the run itself.
     fn checks(&self, found: &mut Findings) {
         use crate::rules::Check::{
-            Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate, Termination,
-            Withstand,
+            Ampacity, Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate,
+            TerminalColumn, Termination, Withstand,
         };
         let of_device = |check| {
             matches!(
@@ -155,11 +155,17 @@ impl Place<'_> {
             (None, None) => None,
         };
         for checked in &self.planned.judgement.checks {
+            // Engine starting lasts seconds; the tables are for continuous current.
+            let mut checked = *checked;
+            if self.is_exempt() && matches!(checked.check, Ampacity | TerminalColumn) {
+                checked.outcome = Outcome::NotChecked;
+                checked.what = "seconds of engine starting against a table for continuous current";
+            }
             let (place, line) = match &first {
                 Some(device) if of_device(checked.check) => device.clone(),
                 _ => (self.place(), self.circuit.line),
             };
-            found.0.extend(of_check(checked, &place, line, material, required));
+            found.0.extend(of_check(&checked, &place, line, material, required));
         }
         for (fitted, judgement) in self.planned.fitted.iter().skip(1).zip(&self.planned.further) {
             let (place, line) = self.of_device(fitted);

@@ -1,0 +1,114 @@
+//! A short site file, built from keys: one bank, one circuit with its device, one load, and what a test changes.
+
+use std::fmt;
+
+/// A site file whose keys can be replaced one by one.
+///
+/// Keys are given as lines of TOML joined by `; `, with texts in single quotes: `size = '10 AWG'; class = 2`.
+/// A key that is given as `none` is taken out.
+#[derive(Clone)]
+pub struct Document(Vec<(&'static str, Vec<String>)>);
+
+/// The sections that stand once; the others are lists.
+const SINGLE: [&str; 2] = ["site", "rules.override"];
+
+fn lines(keys: &str) -> Vec<String> {
+    keys.split("; ").map(str::trim).filter(|line| !line.is_empty()).map(str::to_string).collect()
+}
+
+fn name(line: &str) -> &str {
+    line.split(" = ").next().unwrap_or(line)
+}
+
+impl Document {
+    /// One bank, one run of ordinary length, size and device under a rule set, and a load of 10 A.
+    ///
+    /// Every value the checks ask for is stated, so that no check fails and few are not made.
+    pub fn run(rules: &str) -> Self {
+        let (conductor, family) = match rules {
+            "us" => {
+                ("size = '10 AWG'; class = 2; insulation = 'PVC 75 degC'; installed = 'conduit'", "class T")
+            }
+            "iec" => ("size = '2.5 mm2'; insulation = 'PVC 70 degC'; installed = 'clipped'", "gG"),
+            "craft_iso" => ("size = '2.5 mm2'; insulation = 'PVC 105 degC'", "class T"),
+            _ => ("size = '10 AWG'; class = 2; insulation = 'PVC 105 degC'", "class T"),
+        };
+        Self(Vec::new())
+            .add(
+                "site",
+                &format!(
+                    "name = 'pair'; rules = '{rules}'; earthing = 'negative'; ambient = ['20 degC', '30 degC']"
+                ),
+            )
+            .add(
+                "bank",
+                "name = 'bank'; chemistry = 'agm'; nominal = '12 V'; capacity = '100 Ah'; cut_off = '10.5 V'; \
+                 highest = '15 V'; internal_resistance = '5 mohm'",
+            )
+            .add("load", "name = 'load'; current = '10 A'; least = '1 V'; greatest = '100 V'")
+            .add("circuit", &format!("name = 'run'; from = 'bank'; to = 'load'; one_way = '1 m'; {conductor}"))
+            .add("circuit.device", &device(family, "20 A"))
+    }
+
+    /// Adds a section with these keys behind the others; what belongs to a circuit follows its circuit.
+    pub fn add(mut self, header: &'static str, keys: &str) -> Self {
+        self.0.push((header, lines(keys)));
+        self
+    }
+
+    /// Replaces, adds or takes out keys of the first section of this name.
+    pub fn with(mut self, header: &str, keys: &str) -> Self {
+        let (_, section) = self
+            .0
+            .iter_mut()
+            .find(|(own, _)| *own == header)
+            .unwrap_or_else(|| panic!("no section {header}"));
+        for line in lines(keys) {
+            let place = section.iter().position(|own| name(own) == name(&line));
+            match (place, line.ends_with(" = none")) {
+                (Some(place), true) => drop(section.remove(place)),
+                (Some(place), false) => section[place] = line,
+                (None, true) => panic!("{header} has no {line}"),
+                (None, false) => section.push(line),
+            }
+        }
+        self
+    }
+
+    /// Takes out the sections of this name.
+    pub fn without(mut self, header: &str) -> Self {
+        self.0.retain(|(own, _)| *own != header);
+        self
+    }
+
+    /// The rule set's word.
+    pub fn rules(&self) -> &str {
+        let site = self.0.iter().find(|(header, _)| *header == "site").map(|(_, lines)| lines);
+        let line = site.and_then(|lines| lines.iter().find(|line| name(line) == "rules"));
+        line.and_then(|line| line.split('\'').nth(1)).unwrap_or("")
+    }
+}
+
+/// Keys of a device with all that its checks ask for.
+pub fn device(family: &str, rating: &str) -> String {
+    format!(
+        "family = '{family}'; rating = '{rating}'; dc_voltage = '125 V'; breaking = '20 kA'; \
+         from_source = '100 mm'"
+    )
+}
+
+impl fmt::Display for Document {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        writeln!(f, "format = 1")?;
+        for (header, lines) in &self.0 {
+            match SINGLE.contains(header) {
+                true => writeln!(f, "\n[{header}]")?,
+                false => writeln!(f, "\n[[{header}]]")?,
+            }
+            for line in lines {
+                writeln!(f, "{line}")?;
+            }
+        }
+        Ok(())
+    }
+}

@@ -1,0 +1,214 @@
+//! Fault currents, and devices fit for direct current (R6).
+//!
+//! Lead-acid full 2.2 V, empty 1.98 V a cell (page seen); 20 A/Ah as upper bound of an unknown bank (page seen:
+//! `battery-short-circuit-estimate`). k of Table 43A, IEC 60364-4-43:2008 (page seen): PVC 115, XLPE 143.
+
+use ampwright::site::Severity::{Danger, NotChecked};
+
+use crate::document::{Document, device};
+use crate::pair::Pair;
+
+fn breaking(edge: &'static str, site: Document, passing: &'static str, failing: &'static str) -> Pair {
+    Pair {
+        rule: "R6",
+        edge,
+        slug: "breaking-capacity-too-low",
+        severity: Danger,
+        site,
+        passing,
+        failing,
+        also: &[],
+    }
+}
+
+fn withstand(edge: &'static str, site: Document, passing: &'static str, failing: &'static str) -> Pair {
+    Pair { rule: "R6", edge, slug: "withstand-exceeded", severity: Danger, site, passing, failing, also: &[] }
+}
+
+fn supply(slug: &'static str, edge: &'static str, site: Document) -> Pair {
+    Pair {
+        rule: "R6",
+        edge,
+        slug,
+        severity: Danger,
+        site,
+        passing: "dc_voltage = '32 V'",
+        failing: "ac_only = true",
+        also: &[],
+    }
+}
+
+/// Two banks and a board between them, each behind a fuse at its own end, 1 m of 50 mm² from each.
+fn two_banks() -> Document {
+    let conductor = "one_way = '0.5 m'; size = '50 mm2'; insulation = 'PVC 70 degC'; installed = 'clipped'; \
+                     current = '10 A'";
+    Document::run("iec")
+        .with("circuit", "from = 'board'")
+        .add(
+            "bank",
+            "name = 'reserve'; chemistry = 'agm'; nominal = '12 V'; capacity = '100 Ah'; cut_off = '10.5 V'; \
+             highest = '15 V'; internal_resistance = '5 mohm'",
+        )
+        .add("board", "name = 'board'; busbar = '250 A'")
+        .add("circuit", &format!("name = 'feeder'; from = 'bank'; to = 'board'; {conductor}"))
+        .add("circuit.device", &device("gG", "63 A"))
+        .add("circuit", &format!("name = 'link'; from = 'board'; to = 'reserve'; {conductor}"))
+        .add("circuit.device", &format!("{}; end = 'to'", device("gG", "63 A")))
+}
+
+pub fn pairs() -> Vec<Pair> {
+    vec![
+        // 6 × 2.2 V/5 mΩ = 2.64 kA.
+        breaking(
+            "breaking capacity against a bank of stated resistance",
+            Document::run("iec").with("circuit.device", "breaking = '?'"),
+            "2.7 kA",
+            "2.6 kA",
+        ),
+        breaking(
+            "breaking capacity against a bank of stated resistance",
+            Document::run("us").with("circuit.device", "breaking = '?'"),
+            "2.7 kA",
+            "2.6 kA",
+        ),
+        // The maker's current counts as it is, without the resistance of anything else at the bank.
+        breaking(
+            "breaking capacity against a stated current",
+            Document::run("craft_iso")
+                .with("bank", "internal_resistance = none; short_circuit = '3 kA'")
+                .with("circuit.device", "breaking = '?'"),
+            "3.05 kA",
+            "2.95 kA",
+        ),
+        // 20 A/Ah × 100 Ah = 2 kA.
+        breaking(
+            "breaking capacity against a lead-acid bank of which nothing is stated",
+            Document::run("craft_us")
+                .with("bank", "internal_resistance = none")
+                .with("circuit.device", "breaking = '?'"),
+            "2.05 kA",
+            "1.95 kA",
+        ),
+        // 13.2 V/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.470 kA from each bank at 20 °C, joints zero: 4.94 kA.
+        breaking(
+            "all banks feed a fault",
+            two_banks().with("circuit.device", "breaking = '?'"),
+            "5.05 kA",
+            "4.85 kA",
+        ),
+        // No rule of thumb holds for lithium: not checked, and not passed.
+        Pair {
+            severity: NotChecked,
+            ..breaking(
+                "the fault current of a lithium bank is stated or not checked",
+                Document::run("craft_us")
+                    .with("bank", "chemistry = '?'; nominal = '12.8 V'; internal_resistance = none")
+                    .with("circuit.device", "breaking = '50 kA'"),
+                "agm",
+                "lfp",
+            )
+        },
+        Pair {
+            severity: NotChecked,
+            ..breaking(
+                "a breaking capacity is stated or not checked",
+                Document::run("iec").with("circuit.device", "breaking = none; ?"),
+                "breaking = '20 kA'",
+                "",
+            )
+        },
+        supply(
+            "device-not-for-this-supply",
+            "a device for AC only is refused",
+            Document::run("us").with("circuit.device", "dc_voltage = none; ?"),
+        ),
+        supply(
+            "device-not-for-this-supply",
+            "a device for AC only is refused",
+            Document::run("iec").with("circuit.device", "dc_voltage = none; ?"),
+        ),
+        supply(
+            "part-not-for-dc",
+            "a switch for AC only is refused",
+            Document::run("craft_iso")
+                .add("circuit.part", "name = 'switch'; kind = 'switch'; rating = '50 A'; ?"),
+        ),
+        Pair {
+            rule: "R6",
+            edge: "a device's DC voltage reaches the highest of the bank",
+            slug: "device-not-for-this-supply",
+            severity: Danger,
+            site: Document::run("craft_us").with("circuit.device", "dc_voltage = '?'"),
+            passing: "15.2 V",
+            failing: "14.8 V",
+            also: &[],
+        },
+        Pair {
+            rule: "R6",
+            edge: "a DC voltage is stated or not checked",
+            slug: "device-not-for-this-supply",
+            severity: NotChecked,
+            site: Document::run("craft_us").with("circuit.device", "dc_voltage = none; ?"),
+            passing: "dc_voltage = '32 V'",
+            failing: "",
+            also: &[],
+        },
+        Pair {
+            rule: "R6",
+            edge: "a switch's DC voltage reaches the highest of the bank",
+            slug: "part-voltage-too-low",
+            severity: Danger,
+            site: Document::run("us")
+                .add("circuit.part", "name = 'switch'; kind = 'switch'; rating = '50 A'; dc_voltage = '?'"),
+            passing: "15.2 V",
+            failing: "14.8 V",
+            also: &[],
+        },
+        // Between two banks the current reverses.
+        Pair {
+            rule: "R6",
+            edge: "no marked polarity where both ends feed",
+            slug: "polarity-reversible",
+            severity: Danger,
+            site: Document::run("iec")
+                .with("circuit", "to = 'reserve'; current = '10 A'")
+                .with("circuit.device", "polarised = ?")
+                .without("load")
+                .add(
+                    "bank",
+                    "name = 'reserve'; chemistry = 'agm'; nominal = '12 V'; capacity = '100 Ah'; \
+                     cut_off = '10.5 V'; highest = '15 V'; internal_resistance = '5 mohm'",
+                )
+                .add("circuit.device", &format!("{}; end = 'to'", device("gG", "20 A"))),
+            passing: "false",
+            failing: "true",
+            also: &[],
+        },
+        // (115 × 2.5 mm²)² = 82,656 A²s.
+        withstand(
+            "a PVC conductor withstands what the device lets through",
+            Document::run("iec").with("circuit.device", "let_through = '?'"),
+            "81000 A2s",
+            "84000 A2s",
+        ),
+        // (143 × 2.5 mm²)² = 127,806 A²s.
+        withstand(
+            "an XLPE conductor withstands what the device lets through",
+            Document::run("iec")
+                .with("circuit", "insulation = 'XLPE 90 degC'")
+                .with("circuit.device", "let_through = '?'"),
+            "126000 A2s",
+            "130000 A2s",
+        ),
+        // A type B breaker trips within 0.1 s above 7 In (IEC 60898-3, recalled): 2640² × 0.1 = 697,000 A²s, k²S² of 6 mm²
+        // 476,000, of 10 mm² 1,322,500 A²s; √(697,000)/115 = 7.26 mm².
+        withstand(
+            "a conductor withstands a breaker's instantaneous trip",
+            Document::run("iec")
+                .with("circuit", "size = '?'")
+                .with("circuit.device", "family = 'miniature B'"),
+            "7.4 mm2",
+            "7.1 mm2",
+        ),
+    ]
+}

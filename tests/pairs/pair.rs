@@ -1,0 +1,85 @@
+//! Twins: two site files that differ in one stated value, one just passing and one just failing.
+
+use ampwright::site::{Finding, Report, Severity, inspect, read};
+
+use crate::document::Document;
+
+/// A pair of site files about one edge.
+pub struct Pair {
+    /// Rule of the design that the edge belongs to.
+    pub rule: &'static str,
+    /// What the edge is.
+    pub edge: &'static str,
+    /// Kind of finding that the failing twin has and the passing one has not.
+    pub slug: &'static str,
+    pub severity: Severity,
+    /// The file, with `?` where the twins differ.
+    pub site: Document,
+    pub passing: &'static str,
+    pub failing: &'static str,
+    /// Other faults the failing twin cannot but have too.
+    pub also: &'static [&'static str],
+}
+
+impl Pair {
+    /// The rule set; the passing twin's where the twins differ in it.
+    pub fn set(&self) -> &str {
+        if self.site.rules() == "?" { self.passing } else { self.site.rules() }
+    }
+
+    pub fn text(&self, value: &str) -> String {
+        let text = self.site.to_string();
+        assert_eq!(text.matches('?').count(), 1, "{}: twins differ in one place", self.edge);
+        text.replace('?', value)
+    }
+
+    fn report(&self, value: &str) -> Result<Report, String> {
+        let text = self.text(value);
+        let site = read(&text).map_err(|problems| problems.to_string())?;
+        inspect(&site).map_err(|problems| problems.to_string())
+    }
+
+    /// What is wrong with the pair; empty where both twins come out right.
+    pub fn faults(&self) -> Vec<String> {
+        let mut faults = Vec::new();
+        let mut fault = |twin: &str, what: String| {
+            faults.push(format!("{} {} ({}), {twin}: {what}", self.rule, self.edge, self.site.rules()));
+        };
+        let (passing, failing) = match (self.report(self.passing), self.report(self.failing)) {
+            (Ok(passing), Ok(failing)) => (passing, failing),
+            (Err(refused), _) | (_, Err(refused)) => {
+                fault("refused", refused);
+                return faults;
+            }
+        };
+        for finding in &passing.findings {
+            if finding.slug == self.slug || is_failure(finding) {
+                fault("passing", finding.to_string());
+            }
+        }
+        let found = |f: &&Finding| f.slug == self.slug;
+        match failing.findings.iter().find(found) {
+            None => fault("failing", format!("no {}", self.slug)),
+            Some(finding) if finding.severity != self.severity => {
+                fault("failing", format!("{}: {finding}", finding.severity.word()));
+            }
+            Some(_) => {}
+        }
+        // Nothing else may stand in for it: the failing twin fails here and nowhere else.
+        for finding in failing.findings.iter().filter(|f| is_failure(f)) {
+            if finding.slug != self.slug && !self.also.contains(&finding.slug) {
+                fault("failing", format!("too: {finding}"));
+            }
+        }
+        for slug in self.also {
+            if !failing.findings.iter().any(|f| f.slug == *slug) {
+                fault("failing", format!("not found too: {slug}"));
+            }
+        }
+        faults
+    }
+}
+
+fn is_failure(finding: &Finding) -> bool {
+    matches!(finding.severity, Severity::Danger | Severity::Nonconforming)
+}
