@@ -1,11 +1,6 @@
 //! Charge limits of a bank over temperature: `cargo run --example charge_limits`.
 
-use ampwright::Error;
-use ampwright::battery::{Chemistry, charge_current_limit, charge_limit};
-use uom::si::electric_charge::ampere_hour;
-use uom::si::electric_current::ampere;
-use uom::si::f64::{ElectricCharge, ThermodynamicTemperature};
-use uom::si::thermodynamic_temperature::degree_celsius;
+use ampwright::prelude::*;
 
 fn main() -> Result<(), Error> {
     let capacity = ElectricCharge::new::<ampere_hour>(100.0);

@@ -121,10 +121,12 @@ pub mod prelude;
 /// The longer pages, whose examples are tested with the rest.
 #[cfg(doc)]
 pub mod guide {
+    #[cfg(feature = "site")]
     #[doc = include_str!("../guide/first_hour.md")]
     pub mod first_hour {}
     #[doc = include_str!("../guide/run_sizing.md")]
     pub mod run_sizing {}
+    #[cfg(feature = "site")]
     #[doc = include_str!("../guide/site_file.md")]
     pub mod site_file {}
     #[doc = include_str!("../guide/rule_sets.md")]

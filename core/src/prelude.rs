@@ -44,7 +44,7 @@ pub use crate::law::{
     usable_energy, voltage_drop,
 };
 
-pub use crate::battery::{Chemistry, charge_current_limit, discharge_current_limit};
+pub use crate::battery::{Chemistry, charge_current_limit, charge_limit, discharge_current_limit};
 pub use crate::cable::{
     Class, Coating, Compound, Conductor, Insulation, JointKind, Material, joint_resistance,
 };

@@ -182,8 +182,10 @@ impl Facts<'_> {
         if !device.family.data().overload {
             return None;
         }
-        let what =
-            "current at which the device has opened within its conventional time, against 1.45 × ampacity";
+        let what = self.term(
+            "current at which the device has surely opened, against 1.45 × ampacity",
+            "current I2 at which the device has surely opened, against 1.45 × Iz",
+        );
         let Some(times) = device.family.operating_ratio(device.rating) else {
             return Some(Checked::plain(
                 Check::OpensLate,

@@ -26,6 +26,9 @@ pub struct Judgement {
     pub continuous: ElectricCurrent,
     /// Ampacity after all factors, where the set tabulates it.
     pub ampacity: Option<Ampacity>,
+    /// Temperature rating that picked the ampacity column, °C: the lowest of insulation, lugs, terminals and device
+    /// (under `us` the insulation's; the terminal's column is a check of its own).
+    pub counted_degC: f64,
     /// Conductor temperature at the design current.
     pub temperature: ThermodynamicTemperature,
     /// Resistance of the whole loop at that temperature, joints included.
@@ -131,6 +134,7 @@ pub fn judge(
         current,
         continuous,
         ampacity: None,
+        counted_degC: rating_degC,
         temperature,
         resistance,
         drop,

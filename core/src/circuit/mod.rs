@@ -6,6 +6,8 @@ mod inverter;
 mod judge;
 mod run;
 mod size;
+#[cfg(test)]
+mod tests;
 
 use crate::catalogue::Entry;
 

@@ -9,7 +9,9 @@ use crate::cable::Conductor;
 use crate::error::Error;
 use crate::protection::{Guard, Offer, choose, least_rating};
 use crate::quantity::{ConductorSize, ElectricCurrent, Ratio};
+use uom::si::electric_current::ampere;
 use uom::si::ratio::ratio;
+use uom::si::thermodynamic_temperature::degree_celsius;
 
 /// A size that was not taken, and the first check it failed.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -40,6 +42,11 @@ pub struct SizedRun {
     pub conductor: Conductor,
     /// The device taken, where one was asked for.
     pub guard: Option<Guard>,
+    /// Temperature rating that lugs and terminals must have for this size to hold, °C (R4).
+    pub terminal_degC: f64,
+    /// Least rating of every switch, relay, busbar, shunt, connector and holder in the path: its device's, or the
+    /// design current where there is no device (R8).
+    pub part_rating: ElectricCurrent,
     /// What decided.
     pub governing: Governing,
     /// Smaller sizes, each with its reason, smallest first.
@@ -104,7 +111,15 @@ pub fn size_run(run: &Run, conductors: &[Conductor], offers: &[Offer<'_>]) -> Re
         let outcome = try_conductor(run, conductor, offers)?;
         let (failed, error) = match outcome {
             Ok((guard, judgement)) => {
-                return Ok(SizedRun { conductor: *conductor, guard, governing, rejected, judgement });
+                return Ok(SizedRun {
+                    conductor: *conductor,
+                    guard,
+                    terminal_degC: terminal_degC(run, conductor, &judgement),
+                    part_rating: guard.map_or(judgement.current, |g| g.device.rating),
+                    governing,
+                    rejected,
+                    judgement,
+                });
             }
             Err(reason) => reason,
         };
@@ -123,6 +138,16 @@ pub fn size_run(run: &Run, conductors: &[Conductor], offers: &[Offer<'_>]) -> Re
             remedy: "offer larger conductors, shorten the run, split the load or raise the voltage",
         },
     })
+}
+
+/// Rating the terminals must have: under `us` that of the column the terminal check used, else the counted one.
+fn terminal_degC(run: &Run, conductor: &Conductor, judged: &Judgement) -> f64 {
+    let Some(rule) = run.rules.set().terminal else { return judged.counted_degC };
+    let factor = run.rules.continuous_factor().value;
+    let need = factor * judged.continuous + (judged.current - judged.continuous);
+    let marked = run.terminal.map(|t| t.get::<degree_celsius>());
+    let usual = if need.get::<ampere>() <= rule.upto_A { rule.low_degC } else { rule.high_degC };
+    marked.map_or(usual, |m| m.min(rule.high_degC)).min(conductor.insulation.rating_degC())
 }
 
 /// Why a conductor was refused.
