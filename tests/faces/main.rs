@@ -6,11 +6,13 @@ mod entries;
 mod reference_page;
 mod vectors;
 
-use ampwright::catalogue::Entry;
+use ampwright::cable::{AWG_SERIES, METRIC_SERIES};
+use ampwright::catalogue::{Entry, Input};
+use ampwright::quantity::{ConductorSize, Designation};
 
 /// All entries of all rooms, in the order of the reference page.
 fn catalogue() -> impl Iterator<Item = &'static Entry> {
-    ampwright::law::CATALOGUE.iter().copied().flatten()
+    ampwright::entries()
 }
 
 /// Compares a committed file with what it should be, or writes it where `AMPWRIGHT_REGENERATE` is set.
@@ -58,11 +60,18 @@ impl Numbers {
         (self.bits() >> 11) as f64 / (1u64 << 53) as f64
     }
 
-    /// A valid value of an input, from the middle of its range.
-    fn valid(&mut self, range: ampwright::error::Allowed) -> f64 {
+    /// A valid value of an input: from the middle of its range, or a size where only those of a table have one.
+    fn valid(&mut self, input: &Input) -> f64 {
         use ampwright::error::Allowed;
+        /// 18 AWG to 4/0; what follows is kcmil.
+        const GAUGES: usize = 15;
         let part = 0.05 + 0.9 * self.unit();
-        match range {
+        match (input.name, input.unit) {
+            ("size", "mm²") => return self.size_of(&METRIC_SERIES),
+            ("gauge", "AWG") => return self.size_of(&AWG_SERIES[..GAUGES]),
+            _ => {}
+        }
+        match input.range {
             Allowed::Finite => 100.0 * (part - 0.5),
             Allowed::Above(least) | Allowed::AtLeast(least) => least + 100.0 * part,
             Allowed::Between(least, most) | Allowed::AboveUpTo(least, most) => least + (most - least) * part,
@@ -71,10 +80,20 @@ impl Numbers {
         }
     }
 
+    /// One of a series, as its designation counts.
+    fn size_of(&mut self, series: &[ConductorSize]) -> f64 {
+        let place = self.bits() % series.len() as u64;
+        match series[usize::try_from(place).unwrap()].designation() {
+            Designation::Awg(number) => f64::from(number),
+            Designation::Kcmil(size) => f64::from(size),
+            Designation::SquareMillimeter(size) => size,
+        }
+    }
+
     /// Inputs that the entry accepts.
     fn accepted(&mut self, entry: &Entry) -> Vec<f64> {
         for _ in 0..10_000 {
-            let inputs: Vec<f64> = entry.inputs.iter().map(|input| self.valid(input.range)).collect();
+            let inputs: Vec<f64> = entry.inputs.iter().map(|input| self.valid(input)).collect();
             if call(entry, &inputs).is_ok() {
                 return inputs;
             }

@@ -44,6 +44,9 @@ fn page() -> String {
         for condition in entry.conditions {
             writeln!(page, "\nRefused unless `{condition}`.").unwrap();
         }
+        if let Some(refusal) = entry.refusal {
+            writeln!(page, "\nRefused where {refusal}.").unwrap();
+        }
         writeln!(page, "\nFormula: {}\n\nSource: {}", entry.formula, entry.source).unwrap();
     }
     page

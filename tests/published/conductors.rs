@@ -38,6 +38,10 @@ impl Table {
         self.rows.iter().map(|cells| Row { table: self, cells })
     }
 
+    pub(crate) fn has(&self, column: &str) -> bool {
+        self.columns.iter().any(|name| name == column)
+    }
+
     pub(crate) fn len(&self) -> usize {
         self.rows.len()
     }

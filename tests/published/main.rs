@@ -6,3 +6,4 @@ mod ampacity;
 mod law;
 mod practice;
 mod protection_rules;
+mod rooms;

@@ -96,7 +96,7 @@ calculations! {
         /// Full, warm and new.
         internal_resistance: ElectricalResistance in ohm [>= 0.0],
     ) -> resistance: ElectricalResistance in ohm
-    formula "R = R₀·k_discharged·k_cold·k_aged"
+    formula "R = R₀·k_discharged·k_cold·k_aged: lead-acid 2·1.5·1.5, lithium 1.5·3·2, nickel-cadmium 1.5·1.5·1.5"
     source "common practice, no source"
     { internal_resistance * resistance_rise(chemistry).product() }
 }

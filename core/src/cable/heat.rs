@@ -128,10 +128,9 @@ pub fn adiabatic_k(
 }
 
 calculations! {
-    /// Current density that a conductor stands for one second from one temperature to another: k of the adiabatic
-    /// equation, by the formula alone.
+    /// Current density that a conductor bears for one second between two temperatures: k of the adiabatic equation.
     ///
-    /// For a conductor that does not start at its rating, such as a protective conductor at 30 °C; at its rating
+    /// By the formula alone, for a conductor that does not start at its rating, such as a protective conductor at 30 °C; at its rating
     /// [`adiabatic_k`] knows the tables. [`law::adiabatic_area()`](crate::law::adiabatic_area()) takes it.
     ///
     /// # Example

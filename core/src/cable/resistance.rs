@@ -198,7 +198,7 @@ calculations! {
         /// Of the conductor, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-80.0 ..= 250.0],
     ) -> resistivity: ElectricalResistivity in ohm_meter
-    formula "ρ = ρ₂₀·(θ − θ₀)/(20 °C − θ₀); copper 1/58 Ω·mm²/m, θ₀ = −234.5 °C"
+    formula "ρ = ρ₂₀·(θ − θ₀)/(20 °C − θ₀); ρ₂₀ in Ω·mm²/m and θ₀: copper 1/58, −234.5 °C; aluminium 0.028264, copper-clad aluminium 0.02743, both −228 °C"
     source "IEC 60028:1925; aluminium IEC 60889, copper-clad aluminium ASTM B566, class 10 (both recalled)"
     {
         let celsius = temperature.get::<degree_celsius>();

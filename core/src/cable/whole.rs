@@ -56,7 +56,7 @@ calculations! {
     fn iec_conductor_resistance(
         /// Nominal cross-section, one of the table's: 0.5, 0.75, 1, 1.5, 2.5, 4, 6, 10, 16, 25, 35, 50, 70, 95, 120, 150, 185, 240, 300, 400 mm²; class 1 ends at 16.
         size: Area in square_millimeter [> 0.0 ..= 1000.0],
-        /// 1 solid, 2 stranded, 5 flexible, 6 extra flexible.
+        /// After IEC 60228: solid, stranded, flexible, extra flexible.
         class: Class in choice [choice],
         /// Of the strands.
         coating: Coating in choice [choice],
@@ -100,8 +100,8 @@ calculations! {
     /// ```
     fn gauge_conductor_resistance(
         /// 18, 16, 14, 12, 10, 8, 6, 4, 3, 2, 1, then 0 for 1/0, −1 for 2/0, −2 for 3/0, −3 for 4/0; solid ends at 8.
-        number: Ratio in awg [-3.0 ..= 40.0],
-        /// 1 solid, 2 stranded, 5 flexible, 6 extra flexible.
+        gauge: Ratio in awg [-3.0 ..= 40.0],
+        /// After IEC 60228: solid, stranded, flexible, extra flexible.
         class: Class in choice [choice],
         /// Of the strands.
         coating: Coating in choice [choice],
@@ -114,12 +114,12 @@ calculations! {
     source "NFPA 70-2023, Chapter 9, Table 8 and its note 2 (coated columns and single cells recalled)"
     fallible "the table has no figure for the gauge"
     {
-        let entered = number.get::<ratio>();
+        let entered = gauge.get::<ratio>();
         let table: &ResistanceTable = if class == Class::Solid { &TABLE_8_SOLID } else { &TABLE_8_STRANDED };
         let tabled = (-3..=40).find(|whole| f64::from(*whole) == entered);
         let tabled = tabled.and_then(|whole| ConductorSize::awg(whole).ok());
         let size = tabled.filter(|size| table.cell(*size, coating).is_some()).ok_or(Error::Contradiction {
-            name: "number",
+            name: "gauge",
             value: entered,
             unit: "AWG",
             why: "NFPA 70 Chapter 9 Table 8 has no figure for it; take a gauge of the table, or the area alone",

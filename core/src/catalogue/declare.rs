@@ -18,8 +18,9 @@
 /// }
 /// ```
 ///
-/// A body of plain quantities is computed for whole columns without a jump; it meets inputs that are not valid, too. A
-/// `fallible` body has no such path: its columns are computed row by row, and its `formula` is a `Result`.
+/// A body of plain quantities is computed for whole columns without a jump but its own and those of choices; it meets
+/// inputs that are not valid, too. A `fallible` body has no such path: its columns are computed row by row, and its
+/// `formula` is a `Result`.
 ///
 /// Emits the typed, checked function `name`, and a hidden module `name` with the unchecked `formula` for rooms that
 /// have checked already, and the `ENTRY`. A result that is infinite or NaN is an error too.

@@ -3,6 +3,7 @@
 //! Each is declared once, in its room, by the macro `calculations!` of `declare.rs`: from it come the typed
 //! function with its table of inputs, and an [`Entry`] that the faces are generated from. Faces hand over plain
 //! numbers in the declared units; everything is checked on the value in the base unit, so that all faces agree.
+//! [`entries()`](crate::entries()) lists those of every room.
 
 #[cfg(feature = "std")]
 mod array;

@@ -160,7 +160,6 @@ mod columns {
     use std::vec;
 
     use super::*;
-    use crate::catalogue::AtIndex;
 
     /// `rows` good rows with one bad voltage among them.
     fn first_bad(rows: usize, bad: &[usize]) -> Option<usize> {
@@ -199,15 +198,16 @@ mod columns {
         let volts: vec::Vec<f64> = (0..rows).map(f64::from).collect();
         let mut metals = vec![1.0; volts.len()];
         let mut doubles = vec![f64::NAN; volts.len()];
-        let run =
-            |metals: &[f64], doubles: &mut [f64]| (moody::ENTRY.array)(&[metals, &volts], &mut [doubles]);
+        let run = |metals: &[f64], doubles: &mut [f64]| {
+            (moody::ENTRY.array)(&[metals, &volts], &mut [doubles]).map_err(|e| (e.index, e.error.slug()))
+        };
         assert_eq!(run(&metals, &mut doubles), Ok(()));
         assert!(doubles.iter().zip(&volts).all(|(double, single)| *double == 2.0 * single));
         assert_eq!(run(&[0.0], &mut doubles), Ok(()));
         metals[300] = 2.0;
         metals[301] = 7.0;
-        assert_eq!(run(&metals, &mut doubles), Err(AtIndex { index: Some(300), error: BRASS }));
-        assert!(run(&metals[..2], &mut doubles).is_err());
+        assert_eq!(run(&metals, &mut doubles), Err((Some(300), BRASS.slug())));
+        assert_eq!(run(&metals[..2], &mut doubles), Err((None, "wrong-count")));
     }
 
     #[test]

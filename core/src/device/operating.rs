@@ -44,8 +44,8 @@ calculations! {
         /// Of the device.
         rating: ElectricCurrent in ampere [> 0.0],
     ) -> current: ElectricCurrent in ampere
-    formula "I = c·I_n, c the family's continuous ratio"
-    source "R5 of the design: 0.8 unless the family's standard makes the rating the current carried without limit of time"
+    formula "I = c·I_n; c = 1 for gG, gPV, aR, miniature and industrial breakers, 0.8 for the others"
+    source "R5 of the design: at most 80 % unless the family's standard makes the rating the current carried without limit of time"
     { family.data().continuous_ratio * rating }
 
     /// Currents that a device must carry, and must have opened on, within its conventional time.

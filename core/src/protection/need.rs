@@ -24,15 +24,15 @@ calculations! {
         /// For three hours or more.
         continuous_current: ElectricCurrent in ampere [>= 0.0],
         /// The rest.
-        other_current: ElectricCurrent in ampere [>= 0.0] = 0.0,
+        other_current: ElectricCurrent in ampere [>= 0.0],
         /// Share of its rating that the device carries for hours: 0.8, or 1 where its standard or maker says so.
-        continuous_ratio: Ratio in ratio [> 0.0 ..= 1.0] = 0.8,
+        continuous_share: Ratio in ratio [> 0.0 ..= 1.0] = 0.8,
         /// Of the rule set on continuous current: 1.25 or 1.
         continuous_factor: Ratio in ratio [1.0 ..= 2.0] = 1.25,
     ) -> rating: ElectricCurrent in ampere
     formula "I_n ≥ max(k, 1/c)·I_continuous + I_other"
     source "R4 and R5 of the design; NFPA 70-2023, 210.20(A) and 215.3 give the factor 1.25"
-    { least_rating(continuous_current, other_current, continuous_ratio, false, continuous_factor.get::<ratio>()) }
+    { least_rating(continuous_current, other_current, continuous_share, false, continuous_factor.get::<ratio>()) }
 }
 
 #[cfg(test)]
