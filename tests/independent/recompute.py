@@ -29,6 +29,7 @@ ASSUMED = {
     "switch_V": 0.05,         # of a switch
     "lug_ohm": 1e-4,          # printed: "four crimped lugs of 0.1 mΩ"
     "copper_class_5": 19.95,  # Ω·mm²/km at 20 °C for sizes IEC 60228 does not list: the greatest product of its table
+    "clad_class_5": 31.82,    # the same of copper-clad aluminium
     "full_per_nominal": 1.1,  # driving voltage of the greatest fault current
     "empty_per_nominal": 0.99,  # of the least
     "aged_cold_empty": 4.5,   # internal resistance then, over that of the full, warm, new bank
@@ -86,8 +87,10 @@ def area(size):
 
 # -- conductors -------------------------------------------------------------------------------------------------
 
-def per_km_20(size):
-    """Ω/km at 20 °C of class 5 plain copper."""
+def per_km_20(size, copper=True):
+    """Ω/km at 20 °C of a class 5 plain conductor."""
+    if not copper:
+        return ASSUMED["clad_class_5"] / area(size)
     if size == "35 mm2":
         return 0.554                                    # blank in the reference: IEC 60228:2004, Table 3, recalled
     found = cell("conductors.toml", "iec-60228-class-5", area(size), "plain") if size.endswith("mm2") else ""
@@ -172,7 +175,7 @@ class Circuit:
         return min(self.ambient + rise, self.insulation)
 
     def ohms(self, temperature):
-        return per_km_20(self.size) / 1000 * self.metres * at(temperature) + self.joints + self.device_ohm()
+        return per_km_20(self.size, self.copper) / 1000 * self.metres * at(temperature) + self.joints + self.device_ohm()
 
     def cold_ohms(self):
         return COPPER_20 / area(self.size) / 1000 * self.metres * at(self.coldest)
@@ -220,7 +223,11 @@ class Network:
         return count * value(load["power"]) / volts
 
     def solve(self, root, starting=None):
-        """Currents and volts with one bank at cut-off; conductors at the temperature their current gives them."""
+        """Currents and volts with one bank at cut-off; conductors at the temperature their current gives them.
+
+        A start is too short to warm a conductor: the temperatures of the running plant stay.
+        """
+        running = self.solve(root)[0] if starting else None
         order = self.tree(root)
         source = value(self.banks[root]["cut_off"])
         amps = {c.name: 0.0 for c in self.circuits}
@@ -232,7 +239,7 @@ class Network:
                 new[circuit.name] = at_node[far]
                 at_node[near] += at_node[far]
             for circuit, near, far in order:
-                ohms = circuit.ohms(circuit.temperature(new[circuit.name]))
+                ohms = circuit.ohms(circuit.temperature((running or new)[circuit.name]))
                 volts[far] = volts[near] - new[circuit.name] * ohms
                 if volts[far] <= 0:
                     return None
@@ -312,15 +319,13 @@ class Expectation:
             network.draw(n, states[worst][1][n], None) for n in served if network.loads[n].get("continuous", True))
         self.degrees = circuit.temperature(self.amps)
         self.ohms = circuit.ohms(self.degrees)
-        # Only ways through this circuit count for its far end.
-        ends = [s[1][keys["to"]] for root, s in states.items() if circuit in list(network.path(root, keys["to"]))]
+        # Only ways through this circuit count for its far end. A link leads to a bank, which has no volts to check.
+        ends = [s[1][keys["to"]] for root, s in states.items()
+                if root != keys["to"] and circuit in list(network.path(root, keys["to"]))]
         self.end = min(ends)
         cut_off = value(network.site["bank"][0]["cut_off"])
         self.nominal = value(network.site["bank"][0]["nominal"])
         self.path = (cut_off - self.end) / self.nominal * 100
-        if keys["to"] in network.banks:                 # a link: its stated current on top of what feeds its near end
-            self.end = states[next(iter(states))][1][keys["from"]] - self.amps * self.ohms
-            self.path = (cut_off - self.end) / self.nominal * 100
         self.start = None
         load = network.loads.get(keys["to"], {})
         if "start" in load:
@@ -451,28 +456,29 @@ def circuit_refused(printed, circuit):
 
 
 def failing(site, printed, name, size):
-    """Checks that fail in the whole network when one circuit has another size, with the best device on the shelf."""
-    best = None
-    options = [(printed[name]["family"], printed[name]["rating"])]
-    options += [(d["family"], value(r)) for d in site["stock"]["device"] for r in d["ratings"]]
-    for family, rating in options:
-        changed = printed | {name: printed[name] | {"size": size, "family": family, "rating": rating}}
+    """Checks that fail in the whole network when one circuit has another size.
+
+    The device stays, unless the smaller conductor's greater current asks for the next rating on the shelf.
+    """
+    family, rating = printed[name]["family"], printed[name]["rating"]
+    shelf = [value(r) for d in site["stock"]["device"] if d["family"] == family for r in d["ratings"]]
+    failed = []
+    for rating in sorted(r for r in shelf if r >= rating):
+        changed = printed | {name: printed[name] | {"size": size, "rating": rating}}
         circuits = [Circuit(site, keys, changed[keys["name"]]) for keys in site["circuit"]]
         network = Network(site, circuits)
-        failed = []
-        for circuit in circuits:
-            ours = Expectation(network, circuit)
-            if ours.path > ours.own_limit():
-                failed.append(f"{circuit.name}: drop {ours.path:.2f} %")
-            if ours.start is not None and ours.start < value(ours.least_supply):
-                failed.append(f"{circuit.name}: {ours.start:.2f} V at start")
-            if circuit.name == name and not ours.amps <= rating <= circuit.ampacity():
-                failed.append(f"{name}: Ib {ours.amps:.2f} A, In {rating:g} A, Iz {circuit.ampacity():.2f} A")
-            if circuit.name == name and circuit.opens() > 1.45 * circuit.ampacity():
-                failed.append(f"{name}: I2 {circuit.opens():g} A, 1.45 Iz {1.45 * circuit.ampacity():.2f} A")
-        if best is None or len(failed) < len(best):
-            best = failed
-    return best
+        held = {circuit.name: Expectation(network, circuit) for circuit in circuits}
+        ours, circuit = held[name], next(c for c in circuits if c.name == name)
+        if ours.amps <= rating:
+            failed = [f"drop of {n}, {e.path:.2f} %" for n, e in held.items() if e.path > e.own_limit()]
+            failed += [f"start of {n}, {e.start:.2f} V" for n, e in held.items()
+                       if e.start is not None and e.start < value(e.least_supply)]
+            if ours.amps > circuit.ampacity() or rating > circuit.ampacity():
+                failed.append("ampacity")
+            if circuit.opens() > 1.45 * circuit.ampacity():
+                failed.append("device opens late")
+            break
+    return failed
 
 
 def main():
