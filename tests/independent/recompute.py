@@ -4,12 +4,11 @@
 
 Nothing here comes from the library's code: the inputs are the site files, the reference tables, and what the
 report itself prints (the size and device of each circuit, since they are its decision). The network is solved by
-plain fixed-point iteration. Assumptions that neither report nor guide states are listed in ASSUMED; each is a gap
-of the documentation, and was fitted to the printed figures, so it is checked for consistency only.
+plain fixed-point iteration, once for each bank that may feed alone: currents are the greatest, volts the least of
+these. Assumptions that neither report nor guide states are listed in `tables.ASSUMED`; each is a gap of the
+documentation and was fitted to the printed figures, so it is checked for consistency only.
 """
 
-import functools
-import math
 import pathlib
 import re
 import subprocess
@@ -17,257 +16,11 @@ import sys
 import tomllib
 
 import report
+from plant import Circuit, Network
+from tables import ASSUMED, area, cell, factors, table, us_ampacity, value
 
-HERE = pathlib.Path(__file__).resolve().parent
-SITES = HERE.parents[1] / "core" / "examples" / "sites"
-REFERENCE = HERE.parent / "reference"
+SITES = pathlib.Path(__file__).resolve().parents[2] / "core" / "examples" / "sites"
 
-# Not printed and not in the guide: fitted.
-ASSUMED = {
-    "fuse_V": 0.1,            # resistance of a fuse: this over its rating
-    "breaker_V": 0.2,         # of a breaker
-    "switch_V": 0.05,         # of a switch
-    "lug_ohm": 1e-4,          # printed: "four crimped lugs of 0.1 mΩ"
-    "copper_class_5": 19.95,  # Ω·mm²/km at 20 °C for sizes IEC 60228 does not list: the greatest product of its table
-    "full_per_nominal": 1.1,  # driving voltage of the greatest fault current
-    "empty_per_nominal": 0.99,  # of the least
-    "aged_cold_empty": 4.5,   # internal resistance then, over that of the full, warm, new bank
-}
-# Upper conventional currents over the rating. gG and breakers: tests/reference/protection.toml; class T and molded
-# case: not in the reference, fitted (1.35).
-OPENS = {"miniature B": 1.45, "miniature C": 1.45, "class T": 1.35, "molded case": 1.35}
-COPPER_20 = 1000 / 58        # Ω·mm²/km, IEC 60028
-ZERO = 234.5                 # IEC 60028, inferred zero-resistance temperature, sign changed
-
-
-@functools.cache
-def table(file, name):
-    with open(REFERENCE / file, "rb") as handle:
-        return next(t for t in tomllib.load(handle)["table"] if t["id"] == name)
-
-
-def cell(file, name, row, column):
-    found = table(file, name)
-    at = found["columns"].index(column)
-    return next((r[at] for r in found["rows"] if r[0] == row), "")
-
-
-# -- values with units ------------------------------------------------------------------------------------------
-
-PREFIX = {"k": 1e3, "m": 1e-3, "": 1.0}
-
-
-def value(text):
-    """Number in base units (A, V, W, m, ohm, degC, mm2) of a text such as "7.2 mohm"."""
-    if isinstance(text, (int, float)):
-        return float(text)
-    number, _, unit = text.partition(" ")
-    if unit == "%":
-        return float(number) / 100
-    if unit in ("mm2", "AWG", "kcmil"):
-        return area(text)
-    for base in ("ohm", "Ah", "A2s", "degC", "A", "V", "W", "m"):
-        if unit.endswith(base) and unit[: -len(base)] in PREFIX and unit != "mm":
-            return float(number) * PREFIX[unit[: -len(base)]]
-    if unit == "mm":
-        return float(number) / 1000
-    raise ValueError(text)
-
-
-def area(size):
-    number, unit = size.split()
-    if unit == "mm2":
-        return float(number)
-    if unit == "kcmil":
-        return float(number) * 0.5067075
-    gauge = 1 - int(number[0]) if number.endswith("/0") else int(number)
-    return math.pi / 4 * (0.127 * 92 ** ((36 - gauge) / 39)) ** 2      # ASTM B258
-
-
-# -- conductors -------------------------------------------------------------------------------------------------
-
-def per_km_20(size):
-    """Ω/km at 20 °C of class 5 plain copper."""
-    if size == "35 mm2":
-        return 0.554                                    # blank in the reference: IEC 60228:2004, Table 3, recalled
-    found = cell("conductors.toml", "iec-60228-class-5", area(size), "plain") if size.endswith("mm2") else ""
-    return found or ASSUMED["copper_class_5"] / area(size)
-
-
-def at(temperature):
-    return (ZERO + temperature) / (ZERO + 20)
-
-
-def base_ampacity(rules, size, insulation, installed):
-    if rules == "us":
-        column = "90C" if insulation >= 90 else "75C" if insulation >= 75 else "60C"
-        return us_ampacity(size, column)
-    if installed == "free_air":
-        found = cell("ampacity.toml", "iec-b52-10-pvc-free-air", area(size), "F_two_touching")
-        if found:
-            return found
-    column = {"free_air": "C", "clipped": "C", "cable_in_conduit": "B2", "duct": "D1"}[installed]
-    return cell("ampacity.toml", "iec-b52-2-pvc-two", area(size), column)
-
-
-def us_ampacity(size, column):
-    if (size, column) == ("4 AWG", "75C"):
-        return 85                                       # blank in the reference: NFPA 70 Table 310.16, recalled
-    return cell("ampacity.toml", "nec-310-16-copper", size.removesuffix(" AWG"), column)
-
-
-def factors(rules, insulation, installed, ambient, bundled):
-    if rules == "us":
-        rows = table("ampacity.toml", "nec-310-15-b-1-ambient-30c")
-        heat = next(r[rows["columns"].index(f"{insulation:.0f}C")] for r in rows["rows"] if r[0] >= ambient)
-        group = next(r[1] for r in table("ampacity.toml", "nec-310-15-c-1-bundling")["rows"] if bundled <= r[0])
-        return heat, group
-    if installed == "duct":                             # Table B.52.15 is not in the reference: its formula, base 20 °C
-        heat = round(math.sqrt((insulation - ambient) / (insulation - 20)), 2)
-    else:
-        heat = cell("ampacity.toml", "iec-b52-14-ambient", ambient, "PVC")
-    column = "single_layer_wall_floor" if installed == "clipped" else "bunched"
-    return heat, cell("ampacity.toml", "iec-b52-17-grouping", math.ceil(bundled / 2), column)
-
-
-# -- the site ---------------------------------------------------------------------------------------------------
-
-class Circuit:
-    """One run as the report decided it: stated keys from the file, size and device from the report."""
-
-    def __init__(self, site, keys, printed):
-        self.keys, self.name = keys, keys["name"]
-        self.rules = site["site"]["rules"]
-        self.size = keys.get("size", printed["size"])
-        self.copper = keys.get("material", "copper") == "copper"
-        self.insulation = value(re.search(r"\S+ degC", printed["insulation"])[0])
-        self.installed = keys.get("installed", "conduit")
-        self.ambient = value(keys.get("ambient", site["site"]["ambient"][1]))
-        self.coldest = value(site["site"]["ambient"][0])
-        self.bundled = keys.get("bundled", 2)
-        self.metres = 2 * value(keys["one_way"])
-        self.family, self.rating = printed["family"], printed["rating"]
-        lugs = sum(j.get("count", 1) for j in keys.get("joint", [])) or 4
-        self.joints = lugs * ASSUMED["lug_ohm"]
-        self.joints += sum(ASSUMED["switch_V"] / value(p["rating"]) for p in keys.get("part", []))
-
-    def device_ohm(self):
-        if not self.family:
-            return 0.0
-        breaker = self.family.startswith(("miniature", "molded"))
-        return ASSUMED["breaker_V" if breaker else "fuse_V"] / self.rating
-
-    @functools.cache
-    def base(self):
-        return base_ampacity(self.rules, self.size, self.insulation, self.installed)
-
-    @functools.cache
-    def ampacity(self):
-        heat, group = factors(self.rules, self.insulation, self.installed, self.ambient, self.bundled)
-        return self.base() * heat * group
-
-    def temperature(self, amps):
-        """Heat goes with the square of the current; the report stops at the insulation's rating."""
-        rise = (self.insulation - self.ambient) * (amps / self.ampacity()) ** 2
-        return min(self.ambient + rise, self.insulation)
-
-    def ohms(self, temperature):
-        return per_km_20(self.size) / 1000 * self.metres * at(temperature) + self.joints + self.device_ohm()
-
-    def cold_ohms(self):
-        return COPPER_20 / area(self.size) / 1000 * self.metres * at(self.coldest)
-
-    def opens(self):
-        if self.family == "gG":
-            rows = table("protection.toml", "iec-60269-gg-conventional")["rows"]
-            row = next(r for r in reversed(rows) if self.rating >= r[0] and (r[0] != 4 or self.rating > 4))
-            return row[3] * self.rating
-        return OPENS[self.family] * self.rating
-
-
-class Network:
-    def __init__(self, site, circuits):
-        self.site, self.circuits = site, circuits
-        self.banks = {b["name"]: b for b in site["bank"]}
-        self.loads = {l["name"]: l for l in site.get("load", []) + site.get("inverter", [])}
-
-    def tree(self, root):
-        """Circuits outwards from a bank: (circuit, near node, far node), nearest first."""
-        order, seen = [], {root}
-        grown = True
-        while grown:
-            grown = False
-            for circuit in self.circuits:
-                ends = (circuit.keys["from"], circuit.keys["to"])
-                for near, far in (ends, ends[::-1]):
-                    if near in seen and far not in seen and (near == root or near not in self.banks):
-                        order.append((circuit, near, far))
-                        seen.add(far)
-                        grown = True
-        return order
-
-    def draw(self, name, volts, starting):
-        load = self.loads.get(name)
-        if load is None:
-            return 0.0
-        if name == starting:
-            return value(load["start"])
-        if "efficiency" in load:
-            return value(load["power"]) / value(load["efficiency"]) / volts
-        count = load.get("count", 1)
-        if "current" in load:
-            return count * value(load["current"])
-        return count * value(load["power"]) / volts
-
-    def solve(self, root, starting=None):
-        """Currents and volts with one bank at cut-off; conductors at the temperature their current gives them."""
-        order = self.tree(root)
-        source = value(self.banks[root]["cut_off"])
-        amps = {c.name: 0.0 for c in self.circuits}
-        volts = {far: source for _, _, far in order} | {root: source}
-        for _ in range(500):
-            at_node = {name: self.draw(name, volts[name], starting) for name in volts}
-            new = {c.name: 0.0 for c in self.circuits}
-            for circuit, near, far in reversed(order):
-                new[circuit.name] = at_node[far]
-                at_node[near] += at_node[far]
-            for circuit, near, far in order:
-                ohms = circuit.ohms(circuit.temperature(new[circuit.name]))
-                volts[far] = volts[near] - new[circuit.name] * ohms
-                if volts[far] <= 0:
-                    return None
-            if max(abs(new[k] - amps[k]) for k in amps) < 1e-12:
-                return new, volts
-            amps = new
-        return None
-
-    def path(self, root, node):
-        steps = {far: (circuit, near) for circuit, near, far in self.tree(root)}
-        while node != root:
-            circuit, node = steps[node]
-            yield circuit
-
-    def fault(self, root, node, least):
-        """Ohms and driving volts from one bank to a node."""
-        bank = self.banks[root]
-        inner, nominal = value(bank["internal_resistance"]), value(bank["nominal"])
-        if least:
-            ohms = inner * ASSUMED["aged_cold_empty"] + sum(c.ohms(c.insulation) for c in self.path(root, node))
-            return ohms, nominal * ASSUMED["empty_per_nominal"]
-        return inner + sum(c.cold_ohms() for c in self.path(root, node)), nominal * ASSUMED["full_per_nominal"]
-
-    def fault_amps(self, node, least, without=None, behind=0.0):
-        """Current of all banks into a short circuit behind `behind` ohms at a node, none through `without`."""
-        conductance, volts = 0.0, 0.0
-        for root in self.banks:
-            reachable = root == node or any(far == node for _, _, far in self.tree(root))
-            if reachable and (without is None or without not in list(self.path(root, node))):
-                ohms, volts = self.fault(root, node, least)
-                conductance += 1 / ohms
-        return volts / (1 / conductance + behind)
-
-
-# -- comparison -------------------------------------------------------------------------------------------------
 
 class Comparison:
     def __init__(self):
@@ -293,6 +46,7 @@ def demand(circuit, amps, hours):
 
 
 def drop_limit(network, circuit, uses):
+    """Per cent: lighting, electronics and what feeds them 3, else 5; boards under `us` 3."""
     if circuit.rules == "us":
         feeds_board = circuit.keys["to"] in {b["name"] for b in network.site["board"]}
         return 3 if feeds_board else 5
@@ -312,15 +66,12 @@ class Expectation:
             network.draw(n, states[worst][1][n], None) for n in served if network.loads[n].get("continuous", True))
         self.degrees = circuit.temperature(self.amps)
         self.ohms = circuit.ohms(self.degrees)
-        # Only ways through this circuit count for its far end.
+        # Only ways through this circuit count for its far end; a link ends at a bank, which has no volts to check.
         ends = [s[1][keys["to"]] for root, s in states.items() if circuit in list(network.path(root, keys["to"]))]
+        bank = network.site["bank"][0]
+        self.nominal, self.is_link = value(bank["nominal"]), keys["to"] in network.banks
         self.end = min(ends)
-        cut_off = value(network.site["bank"][0]["cut_off"])
-        self.nominal = value(network.site["bank"][0]["nominal"])
-        self.path = (cut_off - self.end) / self.nominal * 100
-        if keys["to"] in network.banks:                 # a link: its stated current on top of what feeds its near end
-            self.end = states[next(iter(states))][1][keys["from"]] - self.amps * self.ohms
-            self.path = (cut_off - self.end) / self.nominal * 100
+        self.path = (value(bank["cut_off"]) - self.end) / self.nominal * 100
         self.start = None
         load = network.loads.get(keys["to"], {})
         if "start" in load:
@@ -363,6 +114,8 @@ class Expectation:
             return rating, c.ampacity()
         if label.startswith("current at which the device has opened"):
             return c.opens(), 1.45 * c.ampacity()
+        if self.is_link and label.startswith("voltage drop"):
+            return None
         if label.startswith("voltage drop"):
             return self.path, self.own_limit()
         if label.startswith("voltage at the far end while it starts"):
@@ -414,15 +167,12 @@ def compare(out, site, printed):
         out.number(name, "least fault current, A", report.two_digits(loop[3]), ours.least)
         drop = re.match(r"([\d.]+) V here, ([\d.]+) % of.*; ([\d.]+) W lost; ([\d.]+) V at the end", said["drop"])
         out.number(name, "drop here, V", report.amount(drop[1]), ours.amps * ours.ohms)
-        out.number(name, "path drop, %", (float(drop[2]), 0.005), ours.path)
         out.number(name, "lost, W", report.amount(drop[3]), ours.amps**2 * ours.ohms)
-        out.number(name, "volts at the end, V", (float(drop[4]), 0.005), ours.end)
-        row = re.search(r"([\d.]+)%\s+([\d.]+)$", said["row"])
-        out.number(name, "path drop in the table, %", (float(row[1]), 0.05), ours.path)
-        out.number(name, "volts in the table, V", (float(row[2]), 0.005), ours.end)
         fault = re.search(r"greatest fault current (\d+) A", said["device"])
         if fault:
             out.number(name, "greatest fault current, A", report.two_digits(fault[1]), ours.greatest)
+        if not ours.is_link:
+            volts(out, name, said, drop, ours)
         for check in said["checks"]:
             held = ours.check(check.label) if check.actual else None
             if held is None:
@@ -435,44 +185,64 @@ def compare(out, site, printed):
             smaller(out, site, printed, circuit)
 
 
+def volts(out, name, said, drop, ours):
+    row = re.search(r"([\d.]+)%\s+([\d.]+)$", said["row"])
+    out.number(name, "path drop, %", (float(drop[2]), 0.005), ours.path)
+    out.number(name, "volts at the end, V", (float(drop[4]), 0.005), ours.end)
+    out.number(name, "path drop in the table, %", (float(row[1]), 0.05), ours.path)
+    out.number(name, "volts in the table, V", (float(row[2]), 0.005), ours.end)
+
+
+def shopping(out, site, printed, text):
+    """Metres and money of the cable to buy."""
+    prices = {c["size"]: c.get("price", 0) for c in site.get("stock", {}).get("cable", [])}
+    metres = {}
+    for keys in site["circuit"]:
+        if printed[keys["name"]]["designed"]:
+            size = printed[keys["name"]]["size"]
+            metres[size] = metres.get(size, 0) + 2 * value(keys["one_way"])
+    for size, length in metres.items():
+        line = re.search(rf"^ +([\d.]+) m +{re.escape(size)} .*  ([\d.]+)$", text, re.M)
+        out.number("to buy", f"{size}, m", (float(line[1]), 0.05), length)
+        out.number("to buy", f"{size}, price", (float(line[2]), 0.005), length * prices[size])
+
+
 def smaller(out, site, printed, circuit):
     """The next smaller size on the shelf must fail in the network as it was designed in the end."""
     shelf = sorted((area(c["size"]), c["size"]) for c in site["stock"]["cable"])
     below = [s for mm2, s in shelf if mm2 < area(circuit.size)]
     if not below:
         return
-    out.fact(circuit.name, "last size not taken", circuit_refused(printed, circuit), below[-1])
+    refused = printed[circuit.name]["refused"]
+    out.fact(circuit.name, "last size not taken", refused[-1][0] if refused else "none", below[-1])
     reasons = failing(site, printed, circuit.name, below[-1])
     out.fact(circuit.name, f"{below[-1]} fails as the rest is", "yes", "yes" if reasons else "no")
 
 
-def circuit_refused(printed, circuit):
-    return printed[circuit.name]["refused"][-1][0] if printed[circuit.name]["refused"] else "none"
-
-
 def failing(site, printed, name, size):
-    """Checks that fail in the whole network when one circuit has another size, with the best device on the shelf."""
-    best = None
-    options = [(printed[name]["family"], printed[name]["rating"])]
-    options += [(d["family"], value(r)) for d in site["stock"]["device"] for r in d["ratings"]]
-    for family, rating in options:
-        changed = printed | {name: printed[name] | {"size": size, "family": family, "rating": rating}}
+    """Checks that fail in the whole network when one circuit has another size.
+
+    The device stays, unless the smaller conductor's greater current asks for the next rating on the shelf.
+    """
+    family, rating = printed[name]["family"], printed[name]["rating"]
+    shelf = [value(r) for d in site["stock"]["device"] if d["family"] == family for r in d["ratings"]]
+    failed = ["no device on the shelf"]
+    for rating in sorted(r for r in shelf if r >= rating):
+        changed = printed | {name: printed[name] | {"size": size, "rating": rating}}
         circuits = [Circuit(site, keys, changed[keys["name"]]) for keys in site["circuit"]]
         network = Network(site, circuits)
-        failed = []
-        for circuit in circuits:
-            ours = Expectation(network, circuit)
-            if ours.path > ours.own_limit():
-                failed.append(f"{circuit.name}: drop {ours.path:.2f} %")
-            if ours.start is not None and ours.start < value(ours.least_supply):
-                failed.append(f"{circuit.name}: {ours.start:.2f} V at start")
-            if circuit.name == name and not ours.amps <= rating <= circuit.ampacity():
-                failed.append(f"{name}: Ib {ours.amps:.2f} A, In {rating:g} A, Iz {circuit.ampacity():.2f} A")
-            if circuit.name == name and circuit.opens() > 1.45 * circuit.ampacity():
-                failed.append(f"{name}: I2 {circuit.opens():g} A, 1.45 Iz {1.45 * circuit.ampacity():.2f} A")
-        if best is None or len(failed) < len(best):
-            best = failed
-    return best
+        held = {circuit.name: Expectation(network, circuit) for circuit in circuits}
+        ours, circuit = held[name], next(c for c in circuits if c.name == name)
+        if ours.amps <= rating:
+            failed = [f"drop of {n}, {e.path:.2f} %" for n, e in held.items() if e.path > e.own_limit()]
+            failed += [f"start of {n}, {e.start:.2f} V" for n, e in held.items()
+                       if e.start is not None and e.start < value(e.least_supply)]
+            if ours.amps > circuit.ampacity() or rating > circuit.ampacity():
+                failed.append("ampacity")
+            if circuit.opens() > 1.45 * circuit.ampacity():
+                failed.append("device opens late")
+            break
+    return failed
 
 
 def main():
@@ -484,7 +254,9 @@ def main():
             site = tomllib.load(handle)
         text = subprocess.run([sys.argv[1], SITES / f"{name}.toml"], capture_output=True, text=True, check=False).stdout
         out.rows.append((name, "", "report", "ours", "difference", ""))
-        compare(out, site, report.circuits(text))
+        printed = report.circuits(text)
+        compare(out, site, printed)
+        shopping(out, site, printed, text)
     for row in out.rows:
         print("{:15} {:48} {:>12} {:>12} {:>10} {}".format(*row).rstrip())
     print(f"{out.passed} passed, {out.failed} failed")
