@@ -11,13 +11,12 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::bank::Ends;
 use super::graph::{Graph, Item, Tree, path_to};
 use super::model::{BankEntry, LoadKind, Return, Site};
 use super::plan::sources;
-use crate::cable::{Conductor, least_linear_resistance, linear_resistance};
+use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
-use crate::network::{FaultNode, FaultState, NodeLoad, NodeState, Source, TreeNode, prospective, solve};
+use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, ThermodynamicTemperature,
 };
@@ -116,12 +115,12 @@ impl Flows {
                 flows.note_collapse(tree, error);
                 solver.linear(tree, bank.cut_off)
             });
-            flows.take_low(site, tree, &low, bank.cut_off.get::<volt>());
+            flows.take(site, &links, tree, &low, bank.cut_off.get::<volt>());
             volts.extend(tree.nodes.iter().zip(&low).map(|(n, s)| (n.item, s.voltage.get::<volt>())));
             if any_resistive(site)
                 && let Ok(high) = solver.solve(tree, bank.highest)
             {
-                flows.take_currents(tree, &high);
+                flows.take_highest(tree, &high);
             }
             // Each further bank may have to feed the whole island alone.
             for other in tree.nodes.iter().skip(1).filter_map(|n| match n.item {
@@ -134,7 +133,7 @@ impl Flows {
                 let solved = solver
                     .solve(&turned, bank.cut_off)
                     .unwrap_or_else(|_| solver.linear(&turned, bank.cut_off));
-                flows.take_currents(&turned, &solved);
+                flows.take(site, &links, &turned, &solved, bank.cut_off.get::<volt>());
             }
         }
         flows.take_links(site, graph, trees, &volts);
@@ -157,21 +156,7 @@ impl Flows {
         highest: f64,
         ohms: &impl Fn(usize) -> f64,
     ) {
-        let mut sums = vec![(0.0, 0.0); tree.nodes.len()];
-        for (index, node) in tree.nodes.iter().enumerate().rev() {
-            let (continuous, whole) = nominal_watts(site, node.item, nominal);
-            let Some(own) = sums.get_mut(index) else { continue };
-            own.0 += continuous;
-            own.1 += whole;
-            let own = *own;
-            if index > 0
-                && let Some(parent) = sums.get_mut(node.parent)
-            {
-                parent.0 += own.0;
-                parent.1 += own.1;
-            }
-        }
-        for (node, (continuous, whole)) in tree.nodes.iter().zip(sums) {
+        for node in &tree.nodes {
             let Some(index) = node.circuit else { continue };
             let Some(flow) = self.circuits.get_mut(index) else { continue };
             flow.nominal = nominal;
@@ -179,8 +164,6 @@ impl Flows {
             flow.ohms = ohms(index);
             let above = tree.nodes.get(node.parent).map(|p| p.item);
             flow.at_bank = [above, Some(node.item)].iter().any(|i| matches!(i, Some(Item::Bank(_))));
-            // Where nothing is known of the use (bank to bank), all of it counts as continuous.
-            flow.continuous_share = if whole > 0.0 { continuous / whole } else { 1.0 };
             match node.item {
                 Item::Load(i) => {
                     if let Some(load) = site.loads.get(i) {
@@ -213,12 +196,12 @@ impl Flows {
                     continue;
                 };
                 let above = tree.nodes.get(node.parent).and_then(|p| volts.get(&p.item)).copied();
-                let above = above.unwrap_or(cut_off);
                 if let Some(flow) = self.circuits.get_mut(circuit) {
                     flow.current = amps;
                     flow.continuous_share = 1.0;
-                    flow.beginning = above.max(0.01 * cut_off);
-                    flow.drop_before = (cut_off - above).clamp(0.0, cut_off);
+                    // Its own drop alone: a link is no part of the path of a load.
+                    flow.beginning = above.unwrap_or(cut_off).max(0.01 * cut_off);
+                    flow.drop_before = 0.0;
                 }
             }
         }
@@ -237,81 +220,60 @@ impl Flows {
         }
     }
 
-    fn take_low(&mut self, site: &Site, tree: &Tree, states: &[NodeState], emf: f64) {
-        self.take_currents(tree, states);
+    /// Takes one state of the network for every circuit that carries more in it than in those before; where two carry
+    /// the same, the one with the lower voltage. Current, share, voltages and start of a circuit belong to one state.
+    fn take(
+        &mut self,
+        site: &Site,
+        links: &BTreeMap<Item, f64>,
+        tree: &Tree,
+        states: &[NodeState],
+        emf: f64,
+    ) {
+        let long = continuous_currents(site, links, tree, states);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate() {
             let Some(circuit) = node.circuit else { continue };
             let above = states.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
+            let amps = states.get(index).map_or(0.0, |s| libm::fabs(s.current.get::<ampere>()));
             let upstream = path_ohms.get(node.parent).copied().unwrap_or(0.0);
             let Some(flow) = self.circuits.get_mut(circuit) else { continue };
-            if let Some(slot) = self.before.get_mut(circuit) {
-                *slot = tree.nodes.get(node.parent).and_then(|p| p.circuit);
-            }
-            // A collapsed network may fall below zero here; a run begins at some positive voltage.
-            flow.beginning = above.max(0.01 * emf);
-            flow.drop_before = (emf - above).clamp(0.0, emf);
-            flow.ohms_before = upstream;
             if let Some(own) = path_ohms.get_mut(index) {
                 *own = upstream + flow.ohms;
             }
+            let same = libm::fabs(amps - flow.current) <= 1e-9 * amps;
+            // A collapsed network may fall below zero here; a run begins at some positive voltage.
+            let beginning = above.max(0.01 * emf);
+            if (same && beginning >= flow.beginning) || (!same && amps < flow.current) {
+                continue;
+            }
+            if let Some(slot) = self.before.get_mut(circuit) {
+                *slot = tree.nodes.get(node.parent).and_then(|p| p.circuit);
+            }
+            flow.current = amps;
+            flow.continuous_share = match long.get(index) {
+                Some(long) if amps > 0.0 => (long / amps).clamp(0.0, 1.0),
+                _ => 1.0,
+            };
+            flow.beginning = beginning;
+            flow.drop_before = (emf - above).clamp(0.0, emf);
+            flow.ohms_before = upstream;
             if let Item::Load(i) = node.item
                 && let Some(load) = site.loads.get(i)
                 && let Some(start) = load.start
             {
-                let count = f64::from(load.count.max(1));
                 // One of them starts while the rest runs.
-                let running = states.get(index).map_or(0.0, |s| s.current.get::<ampere>()) / count;
+                let running = amps / f64::from(load.count.max(1));
                 flow.start = Some((start.get::<ampere>() - running).max(0.0));
             }
         }
     }
 
-    fn take_currents(&mut self, tree: &Tree, states: &[NodeState]) {
+    /// Resistive loads draw most at the highest voltage: that current counts, against the drop of the worst hour.
+    fn take_highest(&mut self, tree: &Tree, states: &[NodeState]) {
         for (node, state) in tree.nodes.iter().zip(states) {
             if let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) {
                 flow.current = flow.current.max(libm::fabs(state.current.get::<ampere>()));
-            }
-        }
-    }
-
-    fn take_faults(&mut self, site: &Site, tree: &Tree, banks: &[Ends], wired: &[Wired]) {
-        let source = |item: Item, pick: fn(&Ends) -> Option<Source>| match item {
-            Item::Bank(i) => banks.get(i).and_then(pick),
-            _ => None,
-        };
-        let unknown = |pick: fn(&Ends) -> Option<Source>| {
-            tree.nodes.iter().any(|n| matches!(n.item, Item::Bank(_)) && source(n.item, pick).is_none())
-        };
-        let run =
-            |pick: fn(&Ends) -> Option<Source>, ohms: &dyn Fn(usize) -> f64| -> Option<Vec<FaultState>> {
-                // One bank of unknown current makes every sum unknown.
-                if unknown(pick) {
-                    return None;
-                }
-                let nodes: Vec<FaultNode> = tree
-                    .nodes
-                    .iter()
-                    .map(|n| FaultNode {
-                        parent: n.parent,
-                        resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
-                        source: source(n.item, pick),
-                    })
-                    .collect();
-                let mut states = vec![FaultState::default(); nodes.len()];
-                prospective(&nodes, &mut states).ok().map(|()| states)
-            };
-        let strongest = run(|e| e.strongest, &|c| cold_ohms(site, wired, c));
-        let weakest = run(|e| e.weakest, &|c| loop_ohms(site, wired, c, None));
-        for (index, node) in tree.nodes.iter().enumerate() {
-            let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
-            if let Some(state) = strongest.as_ref().and_then(|s| s.get(index)) {
-                flow.fault_at_beginning = Some(state.at_beginning);
-                flow.fault_at_end = Some(state.from_below);
-            }
-            if let Some(state) = weakest.as_ref().and_then(|s| s.get(index)) {
-                flow.weakest_at_beginning = state.source_at_beginning();
-                flow.weakest_at_end = state.source_at_end();
             }
         }
     }
@@ -339,26 +301,57 @@ const fn none() -> Flow {
     }
 }
 
+/// Currents of loads of three hours or more, summed up to each node, A.
+fn continuous_currents(
+    site: &Site,
+    links: &BTreeMap<Item, f64>,
+    tree: &Tree,
+    states: &[NodeState],
+) -> Vec<f64> {
+    let mut sums: Vec<f64> = tree
+        .nodes
+        .iter()
+        .zip(states)
+        .map(|(node, state)| {
+            // A load ends its branch: all that arrives at it is its own.
+            let own = match node.item {
+                Item::Load(i) if site.loads.get(i).is_some_and(|l| l.continuous) => {
+                    state.current.get::<ampere>()
+                }
+                Item::Inverter(_) => state.current.get::<ampere>(),
+                _ => 0.0,
+            };
+            own + links.get(&node.item).copied().unwrap_or(0.0)
+        })
+        .collect();
+    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
+        let own = sums.get(index).copied().unwrap_or(0.0);
+        if let Some(parent) = sums.get_mut(node.parent) {
+            *parent += own;
+        }
+    }
+    sums
+}
+
 fn any_resistive(site: &Site) -> bool {
     site.loads.iter().any(|l| l.kind == LoadKind::Resistive)
 }
 
-/// Continuous and whole power of an item at nominal voltage, W.
-fn nominal_watts(site: &Site, item: Item, nominal: f64) -> (f64, f64) {
+/// Power of an item at nominal voltage, W.
+fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
     match item {
-        Item::Load(i) => site.loads.get(i).map_or((0.0, 0.0), |load| {
+        Item::Load(i) => site.loads.get(i).map_or(0.0, |load| {
             let each = load.power.map_or_else(
                 || load.current.map_or(0.0, |a| a.get::<ampere>() * nominal),
                 |p| p.get::<watt>(),
             );
-            let whole = each * f64::from(load.count);
-            (if load.continuous { whole } else { 0.0 }, whole)
+            each * f64::from(load.count)
         }),
-        Item::Inverter(i) => site.inverters.get(i).map_or((0.0, 0.0), |inverter| {
-            let whole = inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>();
-            (whole, whole)
-        }),
-        Item::Bank(_) | Item::Board(_) => (0.0, 0.0),
+        Item::Inverter(i) => site
+            .inverters
+            .get(i)
+            .map_or(0.0, |inverter| inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>()),
+        Item::Bank(_) | Item::Board(_) => 0.0,
     }
 }
 
@@ -370,8 +363,7 @@ fn node_load(
     as_current: Option<ElectricPotential>,
 ) -> NodeLoad {
     let mut node = NodeLoad { reference: nominal, ..NodeLoad::default() };
-    let (_, whole) = nominal_watts(site, item, nominal.get::<volt>());
-    let whole = Power::new::<watt>(whole);
+    let whole = Power::new::<watt>(nominal_watts(site, item, nominal.get::<volt>()));
     let kind = match item {
         Item::Load(i) => site.loads.get(i).map_or(LoadKind::Power, |l| l.kind),
         _ => LoadKind::Power,
@@ -441,7 +433,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
 }
 
 /// Loop of a circuit at a conductor temperature, or at the insulation's rating where none is known yet.
-fn loop_ohms(site: &Site, wired: &[Wired], index: usize, at_degC: Option<f64>) -> f64 {
+pub(super) fn loop_ohms(site: &Site, wired: &[Wired], index: usize, at_degC: Option<f64>) -> f64 {
     let Some((circuit, (positive, negative, joints))) = site.circuits.get(index).zip(wired.get(index)) else {
         return 0.0;
     };
@@ -459,22 +451,4 @@ fn loop_ohms(site: &Site, wired: &[Wired], index: usize, at_degC: Option<f64>) -
         Return::Chassis(None) | Return::Conductor => of(negative, circuit.negative_length),
     };
     of(positive, circuit.positive_length) + back + joints.get::<ohm>()
-}
-
-/// The least loop of a circuit: metal at the coldest ambient, full area, joints left out (R6).
-fn cold_ohms(site: &Site, wired: &[Wired], index: usize) -> f64 {
-    let Some((circuit, (positive, negative, _))) = site.circuits.get(index).zip(wired.get(index)) else {
-        return 0.0;
-    };
-    let of = |conductor: &Conductor, length: Length| -> f64 {
-        least_linear_resistance(conductor, site.ambient.0).map_or(0.0, |(r, _)| {
-            let run: ElectricalResistance = r * length;
-            run.get::<ohm>()
-        })
-    };
-    let back = match circuit.way_back {
-        Return::Conductor => of(negative, circuit.negative_length),
-        Return::Chassis(_) => 0.0,
-    };
-    of(positive, circuit.positive_length) + back
 }

@@ -1,6 +1,7 @@
 //! A whole site: its document, its checks, its report.
 
 mod bank;
+mod fault;
 mod finding;
 mod flow;
 mod graph;

@@ -1,0 +1,87 @@
+//! Prospective currents of the site, greatest and least, at both ends of each circuit (R6).
+
+use alloc::vec;
+use alloc::vec::Vec;
+
+use uom::si::electrical_resistance::ohm;
+
+use super::bank::Ends;
+use super::flow::{Flows, Wired, loop_ohms};
+use super::graph::{Item, Tree};
+use super::model::{Return, Site};
+use crate::cable::{Conductor, least_linear_resistance};
+use crate::network::{FaultNode, FaultState, Source, prospective};
+use crate::quantity::{ElectricalResistance, Length};
+
+impl Flows {
+    pub fn take_faults(&mut self, site: &Site, tree: &Tree, banks: &[Ends], wired: &[Wired]) {
+        let source = |item: Item, pick: fn(&Ends) -> Option<Source>| match item {
+            Item::Bank(i) => banks.get(i).and_then(pick),
+            _ => None,
+        };
+        let unknown = |pick: fn(&Ends) -> Option<Source>| {
+            tree.nodes.iter().any(|n| matches!(n.item, Item::Bank(_)) && source(n.item, pick).is_none())
+        };
+        let run = |pick: fn(&Ends) -> Option<Source>,
+                   only: Option<Item>,
+                   ohms: &dyn Fn(usize) -> f64|
+         -> Option<Vec<FaultState>> {
+            // One bank of unknown current makes every sum unknown.
+            if unknown(pick) {
+                return None;
+            }
+            let nodes: Vec<FaultNode> = tree
+                .nodes
+                .iter()
+                .map(|n| FaultNode {
+                    parent: n.parent,
+                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, ohms)),
+                    source: source(n.item, pick).filter(|_| only.is_none_or(|only| only == n.item)),
+                })
+                .collect();
+            let mut states = vec![FaultState::default(); nodes.len()];
+            prospective(&nodes, &mut states).ok().map(|()| states)
+        };
+        let strongest = run(|e| e.strongest, None, &|c| cold_ohms(site, wired, c));
+        // The least current flows with one bank alone, the others disconnected.
+        let weakest: Vec<Vec<FaultState>> = tree
+            .nodes
+            .iter()
+            .filter(|n| matches!(n.item, Item::Bank(_)))
+            .filter_map(|n| run(|e| e.weakest, Some(n.item), &|c| loop_ohms(site, wired, c, None)))
+            .collect();
+        for (index, node) in tree.nodes.iter().enumerate() {
+            let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+            if let Some(state) = strongest.as_ref().and_then(|s| s.get(index)) {
+                flow.fault_at_beginning = Some(state.at_beginning);
+                flow.fault_at_end = Some(state.from_below);
+            }
+            let weaker = |one: Option<Source>, other: Option<Source>| match (one, other) {
+                (Some(a), Some(b)) => Some(if a.emf / a.resistance <= b.emf / b.resistance { a } else { b }),
+                (a, b) => a.or(b),
+            };
+            for state in weakest.iter().filter_map(|s| s.get(index)) {
+                flow.weakest_at_beginning = weaker(flow.weakest_at_beginning, state.source_at_beginning());
+                flow.weakest_at_end = weaker(flow.weakest_at_end, state.source_at_end());
+            }
+        }
+    }
+}
+
+/// The least loop of a circuit: metal at the coldest ambient, full area, joints left out (R6).
+fn cold_ohms(site: &Site, wired: &[Wired], index: usize) -> f64 {
+    let Some((circuit, (positive, negative, _))) = site.circuits.get(index).zip(wired.get(index)) else {
+        return 0.0;
+    };
+    let of = |conductor: &Conductor, length: Length| -> f64 {
+        least_linear_resistance(conductor, site.ambient.0).map_or(0.0, |(r, _)| {
+            let run: ElectricalResistance = r * length;
+            run.get::<ohm>()
+        })
+    };
+    let back = match circuit.way_back {
+        Return::Conductor => of(negative, circuit.negative_length),
+        Return::Chassis(_) => 0.0,
+    };
+    of(positive, circuit.positive_length) + back
+}
