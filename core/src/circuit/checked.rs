@@ -126,11 +126,28 @@ impl fmt::Display for Numbers<'_> {
             Relation::Plain => return Ok(()),
         };
         if *outcome == Outcome::Failed && Figures(*actual).reads_like(*limit) {
-            write!(f, "{actual} {unit}, {words} {limit} {unit}")
-        } else {
-            write!(f, "{} {unit}, {words} {} {unit}", Figures(*actual), Figures(*limit))
+            return write!(f, "{actual} {unit}, {words} {limit} {unit}");
+        }
+        // Prospective currents are bounds, not four digits (R6).
+        match self.0.check {
+            Check::Breaking => {
+                write!(f, "{} {unit}, {words} {} {unit}", Figures(*actual), Figures(bound(*limit)))
+            }
+            Check::LeastFault => {
+                write!(f, "{} {unit}, {words} {} {unit}", Figures(bound(*actual)), Figures(*limit))
+            }
+            _ => write!(f, "{} {unit}, {words} {} {unit}", Figures(*actual), Figures(*limit)),
         }
     }
+}
+
+/// Two figures: as many as a prospective current deserves.
+pub fn bound(amps: f64) -> f64 {
+    if !(amps > 0.0 && amps.is_finite()) {
+        return 0.0;
+    }
+    let unit = libm::pow(10.0, libm::floor(libm::log10(amps)) - 1.0);
+    libm::round(amps / unit) * unit
 }
 
 impl fmt::Display for Checked {

@@ -20,11 +20,12 @@ const fn own(place: &'static str) -> Citation {
     Citation::new("design rule", place, Seen::Derived)
 }
 
-/// Upper conventional current of an overload device over the conductor's: the general rule behind R5.
-const OVERLOAD: Citation = Citation::new("IEC 60364-4-43:2008", "433.1", Seen::Page);
 /// A device that protects against overload and breaks the fault also protects against short-circuit.
 const BREAKS_AND_PROTECTS: Citation = Citation::new("IEC 60364-4-43:2008", "435.1", Seen::Recalled);
-const ADIABATIC: Citation = Citation::new("IEC 60364-4-43:2008", "434.5.2, Table 43A", Seen::Page);
+const ADIABATIC_IEC: Citation = Citation::new("IEC 60364-4-43:2008", "434.5.2, Table 43A", Seen::Page);
+/// The same law for the sets that print no k: heat of the fault kept in the metal.
+const ADIABATIC_LAW: Citation =
+    Citation::new("adiabatic law", "k of the metal between rating and short-circuit limit", Seen::Derived);
 /// Longest opening time of an instantaneous trip, s.
 const INSTANTANEOUS_S: f64 = 0.1;
 const INSTANTANEOUS: Citation =
@@ -46,6 +47,13 @@ impl Facts<'_> {
         match self.run.rules.set().key {
             Key::Us | Key::CraftUs => american,
             Key::Iec | Key::CraftIso => international,
+        }
+    }
+
+    fn adiabatic(&self) -> Citation {
+        match self.run.rules.set().key {
+            Key::Iec => ADIABATIC_IEC,
+            Key::Us | Key::CraftIso | Key::CraftUs => ADIABATIC_LAW,
         }
     }
 
@@ -76,22 +84,27 @@ impl Facts<'_> {
         )
     }
 
-    /// (a) of R4, `us` only: the terminal's column, before derating.
-    pub fn terminal_column(&self) -> Option<Checked> {
-        let factor = self.run.rules.continuous_factor();
-        let need = factor.value * self.continuous + (self.current - self.continuous);
+    /// Marked rating of the terminals at both ends, as far as marks count: one without a mark makes the pair unmarked.
+    fn marked_degC(&self) -> Option<f64> {
         let marked = self.run.terminal.map(|t| t.get::<degree_celsius>());
         let marked = match (marked, self.guard) {
-            // A mark counts only where the device carries one too.
             (Some(terminal), Some(guard)) => guard.terminal_degC.map(|device| device.min(terminal)),
             (terminal, None) => terminal,
             (None, Some(_)) => None,
         };
         // Insulation below the terminal's column counts instead of it.
         let insulation = self.thinner.insulation.rating_degC();
-        let marked =
-            if insulation < 75.0 { Some(marked.map_or(insulation, |m| m.min(insulation))) } else { marked };
-        match self.run.rules.terminal_column(self.thinner.size, need, marked) {
+        if insulation < 75.0 { Some(marked.map_or(insulation, |m| m.min(insulation))) } else { marked }
+    }
+
+    fn factored(&self) -> ElectricCurrent {
+        self.run.rules.continuous_factor().value * self.continuous + (self.current - self.continuous)
+    }
+
+    /// (a) of R4, `us` only: the terminal's column, before derating.
+    pub fn terminal_column(&self) -> Option<Checked> {
+        let need = self.factored();
+        match self.run.rules.terminal_column(self.thinner.size, need, self.marked_degC()) {
             Ok(None) => None,
             Ok(Some((cell, column))) => Some(Checked::at_most(
                 Check::TerminalColumn,
@@ -130,7 +143,8 @@ impl Facts<'_> {
     pub fn device_carries(&self) -> Option<Checked> {
         let device = self.guard?.device;
         let factor = self.run.rules.continuous_factor();
-        let carries = Ratio::new::<ratio>(device.family.data().continuous_ratio);
+        let in_full = device.family.data().continuous_ratio;
+        let carries = Ratio::new::<ratio>(in_full);
         let other = self.current - self.continuous;
         let need = least_rating(self.continuous, other, carries, device.full_rated, factor.value);
         Some(Checked::at_least(
@@ -138,9 +152,41 @@ impl Facts<'_> {
             device.rating.get::<ampere>(),
             need.get::<ampere>(),
             "A",
-            "rating of the device against the current it carries for hours",
+            if factor.value > 1.0 && !device.full_rated {
+                "rating of the device against 1.25 × continuous + rest"
+            } else if device.full_rated || in_full >= 1.0 {
+                "rating of the device, which is made to carry all of it for hours, against the design current"
+            } else {
+                "rating of the device, of which it carries 80 % for hours, against continuous / 0.8 + rest"
+            },
             if factor.value > 1.0 { factor.citation } else { own("R5") },
         ))
+    }
+
+    /// A start or surge against the device (R16): breakers by the lower edge of their instantaneous trip, the rest by
+    /// curves that are not held.
+    pub fn device_start(&self) -> Option<Checked> {
+        let device = self.guard?.device;
+        let total = self.current + self.run.start?;
+        if total <= device.rating {
+            return None;
+        }
+        Some(match device.family.data().instantaneous {
+            Some((lower, _)) => Checked::at_most(
+                Check::DeviceStart,
+                total.get::<ampere>(),
+                lower * device.rating.get::<ampere>(),
+                "A",
+                "current while it starts, seconds at most, against the least that trips the breaker at once",
+                device.family.data().source.recalled(),
+            ),
+            None => Checked::plain(
+                Check::DeviceStart,
+                Outcome::NotChecked,
+                "start or surge above the device's rating: compare with its time-current curve, which is not held",
+                own("R16"),
+            ),
+        })
     }
 
     /// (c) of R4.
@@ -156,7 +202,16 @@ impl Facts<'_> {
         }
         Some(match self.ampacity {
             Ok(ampacity) => {
-                let limit = self.run.rules.device_limit(self.thinner.size, ampacity.corrected);
+                // Where the terminal's column admits less than the derated conductor, the device guards the terminal.
+                let column = self
+                    .run
+                    .rules
+                    .terminal_column(self.thinner.size, self.factored(), self.marked_degC())
+                    .ok()
+                    .flatten()
+                    .map(|(cell, _)| ElectricCurrent::new::<ampere>(cell.value));
+                let least = column.filter(|c| *c < ampacity.corrected).unwrap_or(ampacity.corrected);
+                let limit = self.run.rules.device_limit(self.thinner.size, least);
                 let mut citation = limit.citation;
                 if worst_citation(ampacity).seen == Seen::Recalled {
                     citation = citation.recalled();
@@ -183,8 +238,8 @@ impl Facts<'_> {
             return None;
         }
         let what = self.term(
-            "current at which the device has surely opened, against 1.45 × ampacity",
-            "current I2 at which the device has surely opened, against 1.45 × Iz",
+            "current at which the device opens within its conventional time (1 h to 4 h), against 1.45 × ampacity",
+            "current I2 at which the device opens within its conventional time (1 h to 4 h), against 1.45 × Iz",
         );
         let Some(times) = device.family.operating_ratio(device.rating) else {
             return Some(Checked::plain(
@@ -205,7 +260,7 @@ impl Facts<'_> {
             limit.value * ampacity.corrected.get::<ampere>(),
             "A",
             what,
-            OVERLOAD,
+            limit.citation,
         ))
     }
 
@@ -296,7 +351,7 @@ impl Facts<'_> {
             return Some(Checked::plain(
                 Check::LeastFault,
                 Outcome::NotChecked,
-                "no current is held at which this family surely opens",
+                "no current is held at which this family opens",
                 own("R6"),
             ));
         };
@@ -305,7 +360,7 @@ impl Facts<'_> {
             least.get::<ampere>(),
             times * device.rating.get::<ampere>(),
             "A",
-            "least prospective current at the far end against the current that surely opens the device",
+            "least prospective current at the far end against the current at which the device opens",
             own("R6"),
         ))
     }
@@ -316,7 +371,8 @@ impl Facts<'_> {
         let device = guard.device;
         let data = device.family.data();
         let what = "let-through energy I²t against the conductor's k²S²";
-        let missing = |what| Some(Checked::plain(Check::Withstand, Outcome::NotChecked, what, ADIABATIC));
+        let adiabatic = self.adiabatic();
+        let missing = |what| Some(Checked::plain(Check::Withstand, Outcome::NotChecked, what, adiabatic));
         let Some(fault) = self.run.greatest_fault else {
             return missing("withstand of the conductor: the greatest prospective current is not known");
         };
@@ -327,7 +383,7 @@ impl Facts<'_> {
         let bearable = k.value * k.value * area * area;
         let amps = fault.get::<ampere>();
         if let Some(stated) = guard.let_through_A2s {
-            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, ADIABATIC));
+            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, adiabatic));
         }
         if let Some(times) = device.family.instantaneous_ratio()
             && amps >= times * device.rating.get::<ampere>()
@@ -344,7 +400,10 @@ impl Facts<'_> {
                 Check::Withstand,
                 Outcome::Passed,
                 "the fuse guards against overload and breaks the fault, so the conductor withstands it",
-                BREAKS_AND_PROTECTS,
+                match self.run.rules.set().key {
+                    Key::Iec => BREAKS_AND_PROTECTS,
+                    Key::Us | Key::CraftIso | Key::CraftUs => own("R6"),
+                },
             ));
         }
         missing("withstand of the conductor: state let_through (I²t) of the device")

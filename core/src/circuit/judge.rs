@@ -165,6 +165,7 @@ pub fn judge(
             Check::TerminalColumn => push(facts.terminal_column()),
             Check::Ampacity => push(Some(facts.ampacity())),
             Check::DeviceCarries => push(facts.device_carries()),
+            Check::DeviceStart => push(facts.device_start()),
             Check::DeviceProtects => push(facts.device_protects()),
             Check::OpensLate => push(facts.opens_late()),
             Check::Drop => push(Some(facts.drop(path_drop))),
@@ -222,8 +223,12 @@ fn drawn(run: &Run, resistance: ElectricalResistance) -> Result<(ElectricCurrent
     })
 }
 
+/// Where an overloaded conductor's computed temperature ends, °C: the resistance tables end not far above.
+const HOTTEST: f64 = 200.0;
+
 /// Conductor temperature at a current: the rise goes with the square of the current, from ambient at none to the
-/// rating at the ampacity. Slightly high below the ampacity, since a cooler conductor also loses less.
+/// rating at the ampacity. Slightly high below the ampacity,
+/// since a cooler conductor also loses less; an overloaded one goes beyond its rating.
 fn operating_temperature(
     run: &Run,
     current: ElectricCurrent,
@@ -234,5 +239,5 @@ fn operating_temperature(
     let used: f64 = (current / ampacity.corrected).get::<ratio>();
     let (ambient, top) = (run.ambient.get::<degree_celsius>(), rating.get::<degree_celsius>());
     let rise = (top - ambient) * used * used;
-    ThermodynamicTemperature::new::<degree_celsius>((ambient + rise.max(0.0)).min(top).max(ambient))
+    ThermodynamicTemperature::new::<degree_celsius>((ambient + rise.max(0.0)).min(HOTTEST))
 }

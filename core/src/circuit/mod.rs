@@ -11,11 +11,11 @@ mod tests;
 
 use crate::catalogue::Entry;
 
-pub use checked::{Checked, Numbers, Outcome, Relation};
+pub use checked::{Checked, Numbers, Outcome, Relation, bound};
 pub use inverter::{InverterFeed, inverter_feed};
 pub use judge::{Judgement, judge};
 pub use run::{Demand, Run};
-pub use size::{Governing, Rejected, SizedRun, size_run};
+pub use size::{Governing, Rejected, SizedRun, device_need, size_run};
 
 /// Every calculation of this room, by file.
 pub const CATALOGUE: &[&[Entry]] = &[inverter::ENTRIES];

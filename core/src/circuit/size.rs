@@ -6,6 +6,7 @@ use super::checked::{Checked, Outcome};
 use super::judge::{Judgement, judge};
 use super::run::Run;
 use crate::cable::Conductor;
+use crate::device::Family;
 use crate::error::Error;
 use crate::protection::{Guard, Offer, choose, least_rating};
 use crate::quantity::{ConductorSize, ElectricCurrent, Ratio};
@@ -140,6 +141,23 @@ pub fn size_run(run: &Run, conductors: &[Conductor], offers: &[Offer<'_>]) -> Re
     })
 }
 
+/// Least rating of a family that carries what a run draws, and rides through its start: a breaker must not trip at
+/// once, a fuse's curve is not held.
+pub fn device_need(run: &Run, judged: &Judgement, family: Family, full_rated: bool) -> ElectricCurrent {
+    let data = family.data();
+    let carries = Ratio::new::<ratio>(data.continuous_ratio);
+    let factor = run.rules.continuous_factor().value;
+    let other = judged.current - judged.continuous;
+    let need = least_rating(judged.continuous, other, carries, full_rated, factor);
+    match (data.instantaneous, run.start) {
+        (Some((lower, _)), Some(extra)) => {
+            let start = (judged.current + extra) / lower;
+            if start > need { start } else { need }
+        }
+        _ => need,
+    }
+}
+
 /// Rating the terminals must have: under `us` that of the column the terminal check used, else the counted one.
 fn terminal_degC(run: &Run, conductor: &Conductor, judged: &Judgement) -> f64 {
     let Some(rule) = run.rules.set().terminal else { return judged.counted_degC };
@@ -172,12 +190,8 @@ fn try_conductor(
     }
     let mut reason: Reason = (bare.first_failure().copied(), None);
     for offer in offers {
-        let need = |continuous: ElectricCurrent, whole: ElectricCurrent| {
-            let carries = Ratio::new::<ratio>(offer.family.data().continuous_ratio);
-            let factor = run.rules.continuous_factor().value;
-            least_rating(continuous, whole - continuous, carries, offer.full_rated, factor)
-        };
-        let guard = match choose(offer, |_| need(bare.continuous, bare.current)) {
+        let need = device_need(run, &bare, offer.family, offer.full_rated);
+        let guard = match choose(offer, |_| need) {
             Ok(guard) => guard,
             Err(error) => {
                 if reason.0.is_none() && reason.1.is_none() {

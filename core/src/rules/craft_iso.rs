@@ -144,6 +144,7 @@ pub(super) static SET: RuleSet = RuleSet {
         Check::LeastSize,
         Check::Ampacity,
         Check::DeviceCarries,
+        Check::DeviceStart,
         Check::DeviceProtects,
         Check::OpensLate,
         Check::Drop,

@@ -179,6 +179,8 @@ pub enum Check {
     Ampacity,
     /// Device carries the design current.
     DeviceCarries,
+    /// Device rides through a start or surge (R16).
+    DeviceStart,
     /// (c) device protects the conductor.
     DeviceProtects,
     /// The family's upper conventional current (R5).

@@ -380,7 +380,7 @@ fn sets_are_whole() {
         for check in set.order {
             assert_eq!(set.order.iter().filter(|c| *c == check).count(), 1, "{word}: {check:?} once");
         }
-        assert_eq!(set.order.len(), 14 + usize::from(word == "us"));
+        assert_eq!(set.order.len(), 15 + usize::from(word == "us"));
         assert!(set.standard_ratings_A.windows(2).all(|w| w[0] < w[1]), "{word}: ratings rise");
         assert!(set.sizes.windows(2).all(|w| w[0].area_mm2() < w[1].area_mm2()), "{word}: sizes rise");
         for table in set.ampacity_tables {

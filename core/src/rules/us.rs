@@ -126,6 +126,7 @@ pub(super) static SET: RuleSet = RuleSet {
         Check::TerminalColumn,
         Check::Ampacity,
         Check::DeviceCarries,
+        Check::DeviceStart,
         Check::DeviceProtects,
         Check::OpensLate,
         Check::Drop,

@@ -93,6 +93,12 @@ const fn meaning(check: Check) -> (&'static str, &'static str, Severity, &'stati
             Severity::Nonconforming,
             "use a larger device, and a conductor that it protects",
         ),
+        Check::DeviceStart => (
+            "R16",
+            "device-trips-at-start",
+            Severity::Nonconforming,
+            "use a larger breaker, a later type or a soft start",
+        ),
         Check::DeviceProtects => {
             ("R4", "device-above-ampacity", Severity::Danger, "use a smaller device or a larger conductor")
         }
@@ -155,6 +161,7 @@ const fn unmade(check: Check) -> &'static str {
         Check::TerminalColumn => "terminal-column-not-checked",
         Check::Ampacity => "ampacity-not-checked",
         Check::DeviceCarries => "device-load-not-checked",
+        Check::DeviceStart => "start-against-device-not-checked",
         Check::DeviceProtects => "device-against-ampacity-not-checked",
         Check::OpensLate => "opening-current-not-checked",
         Check::Drop => "drop-not-checked",

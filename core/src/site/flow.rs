@@ -258,14 +258,8 @@ impl Flows {
             flow.beginning = beginning;
             flow.drop_before = (emf - above).clamp(0.0, emf);
             flow.ohms_before = upstream;
-            if let Item::Load(i) = node.item
-                && let Some(load) = site.loads.get(i)
-                && let Some(start) = load.start
-            {
-                // One of them starts while the rest runs.
-                let running = amps / f64::from(load.count.max(1));
-                flow.start = Some((start.get::<ampere>() - running).max(0.0));
-            }
+            flow.start =
+                start(site, node.item, amps, states.get(index).map_or(emf, |s| s.voltage.get::<volt>()));
         }
     }
 
@@ -298,6 +292,24 @@ const fn none() -> Flow {
         weakest_at_end: None,
         start: None,
         ohms_before: 0.0,
+    }
+}
+
+/// Current that comes on top while a load starts or an inverter surges, A.
+fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
+    match item {
+        Item::Load(i) => {
+            let load = site.loads.get(i)?;
+            // One of them starts while the rest runs.
+            let running = amps / f64::from(load.count.max(1));
+            Some((load.start?.get::<ampere>() - running).max(0.0))
+        }
+        Item::Inverter(i) => {
+            let inverter = site.inverters.get(i)?;
+            let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
+            Some((surge - amps).max(0.0))
+        }
+        Item::Bank(_) | Item::Board(_) => None,
     }
 }
 

@@ -12,6 +12,7 @@ mod plant;
 mod reach;
 mod read;
 mod report;
+mod smaller;
 mod text;
 mod wiring;
 

@@ -178,12 +178,12 @@ pub struct CircuitEntry {
     pub size: Option<ConductorSize>,
     /// `negative_size`, if it differs.
     pub negative_size: Option<ConductorSize>,
-    /// `material`: `copper` (default), `aluminium`, `copper_clad_aluminium`.
-    pub material: Material,
-    /// `class`: 1, 2, 5 (default) or 6.
-    pub class: Class,
-    /// `coating`: `plain` (default) or `tinned`.
-    pub coating: Coating,
+    /// `material`: `copper`, `aluminium`, `copper_clad_aluminium`; copper if absent and the size is stated.
+    pub material: Option<Material>,
+    /// `class`: 1, 2, 5 or 6; 5 if absent and the size is stated.
+    pub class: Option<Class>,
+    /// `coating`: `plain` or `tinned`; plain if absent and the size is stated.
+    pub coating: Option<Coating>,
     /// `insulation = "PVC 70 degC"`; the rule set's usual one if absent.
     pub insulation: Option<Insulation>,
     /// `sheathed = true`; false if absent.

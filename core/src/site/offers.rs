@@ -6,7 +6,6 @@ use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
 use uom::si::electrical_resistance::ohm;
-use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::model::{CircuitEntry, DeviceEntry, Pole, Site};
@@ -15,10 +14,10 @@ use super::read::Problem;
 use crate::cable::{
     Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance,
 };
-use crate::circuit::{Judgement, Outcome, Run, judge};
+use crate::circuit::{Judgement, Outcome, Run, device_need, judge};
 use crate::device::{Device, Family, Polarity, Supply};
-use crate::protection::{Guard, Offer, choose, least_rating};
-use crate::quantity::{ConductorSize, ElectricCurrent, ElectricalResistance, Ratio};
+use crate::protection::{Guard, Offer, choose};
+use crate::quantity::{ConductorSize, ElectricCurrent, ElectricalResistance};
 
 /// A stated device, if family and rating are stated.
 pub(super) fn complete(stated: &DeviceEntry) -> Option<Guard> {
@@ -45,9 +44,10 @@ pub(super) fn complete(stated: &DeviceEntry) -> Option<Guard> {
 /// What can be had: from the stock, else standard sizes and plain generic parts.
 pub(super) struct Offers {
     /// Conductors, smallest first.
-    pub sizes: Vec<Conductor>,
+    sizes: Vec<Conductor>,
     devices: Vec<OwnedOffer>,
     generic_devices: bool,
+    generic_cables: bool,
 }
 
 struct OwnedOffer {
@@ -76,7 +76,8 @@ impl Offers {
                 insulation: c.insulation,
             })
             .collect();
-        if sizes.is_empty() {
+        let generic_cables = sizes.is_empty();
+        if generic_cables {
             sizes = site
                 .rules
                 .sizes()
@@ -130,31 +131,56 @@ impl Offers {
                 })
                 .collect();
         }
-        Self { sizes, devices, generic_devices }
+        Self { sizes, devices, generic_devices, generic_cables }
     }
 
     /// A circuit's conductors: as stated, or the smallest on offer.
     pub fn draft(&self, site: &Site, circuit: &CircuitEntry) -> Result<Draft, Problem> {
-        let insulation = circuit.insulation.unwrap_or_else(|| site.rules.usual_insulation());
         let stated = |size| Conductor {
             size,
-            material: circuit.material,
-            class: circuit.class,
-            coating: circuit.coating,
-            insulation,
+            material: circuit.material.unwrap_or(Material::Copper),
+            class: circuit.class.unwrap_or(Class::Flexible),
+            coating: circuit.coating.unwrap_or(Coating::Plain),
+            insulation: circuit.insulation.unwrap_or_else(|| site.rules.usual_insulation()),
         };
+        let sizes = self.suiting(circuit);
         let (positive, negative, offered) = if let Some(size) = circuit.size {
             (stated(size), stated(circuit.negative_size.unwrap_or(size)), None)
-        } else if let Some(first) = self.sizes.first() {
+        } else if let Some(first) = sizes.first() {
             (*first, *first, Some(0))
         } else {
             return Err(Problem {
                 line: circuit.line,
                 place: format!("[[circuit]] \"{}\"", circuit.name),
-                text: "no conductor is on offer; add [[stock.cable]] or state size".to_string(),
+                text: "no conductor on offer is of the stated insulation, class, coating and material; add such a \
+                       [[stock.cable]], or state size"
+                    .to_string(),
             });
         };
-        Ok(Draft { positive, negative, offered, refused: Vec::new(), joints: joints(circuit, &[]) })
+        Ok(Draft { positive, negative, offered, sizes, joints: joints(circuit, &[]) })
+    }
+
+    /// Conductors on offer that are what a circuit states of its own, smallest first.
+    fn suiting(&self, circuit: &CircuitEntry) -> Vec<Conductor> {
+        if circuit.size.is_some() {
+            return Vec::new();
+        }
+        let wanted = |c: &Conductor| Conductor {
+            material: circuit.material.unwrap_or(c.material),
+            class: circuit.class.unwrap_or(c.class),
+            coating: circuit.coating.unwrap_or(c.coating),
+            insulation: circuit.insulation.unwrap_or(c.insulation),
+            ..*c
+        };
+        if self.generic_cables {
+            return self.sizes.iter().map(wanted).collect();
+        }
+        self.sizes.iter().filter(|c| wanted(c) == **c).copied().collect()
+    }
+
+    /// Whether devices are plain parts to be bought for their place, not ones on the shelf.
+    pub fn specifies(&self) -> bool {
+        self.generic_devices
     }
 
     /// The device that suits a run: the first offer, in the order of the stock, whose smallest sufficient rating
@@ -167,7 +193,10 @@ impl Offers {
         stated: Option<&DeviceEntry>,
     ) -> Option<Guard> {
         let mut fallback: Option<(usize, Guard)> = None;
-        for owned in &self.devices {
+        // What is on the shelf of a stated family comes before the rest.
+        let of_family = |o: &&OwnedOffer| stated.and_then(|s| s.family).is_none_or(|f| f == o.family);
+        let shelf = self.devices.iter();
+        for owned in shelf.clone().filter(of_family).chain(shelf.filter(|o| !of_family(o))) {
             let family = stated.and_then(|s| s.family).unwrap_or(owned.family);
             let fixed = stated.and_then(|s| s.rating).map(|r| [r.get::<ampere>()]);
             let fixed = fixed.as_ref().map(<[f64; 1]>::as_slice);
@@ -186,22 +215,30 @@ impl Offers {
                 // A part to be bought is bought for its place: the requirement becomes the specification.
                 offer.supply = Supply::Dc(run.highest);
                 offer.breaking = run.greatest_fault;
+            } else if family != owned.family {
+                // Nothing on the shelf is of the stated family: only what the document says is known of it.
+                offer = Offer {
+                    supply: Supply::NotStated,
+                    breaking: None,
+                    polarity: Polarity::None,
+                    full_rated: false,
+                    let_through_A2s: None,
+                    terminal_range: None,
+                    terminal_degC: None,
+                    ..offer
+                };
             }
             if let Some(stated) = stated {
                 offer.supply = if stated.supply == Supply::NotStated { offer.supply } else { stated.supply };
                 offer.breaking = stated.breaking.or(offer.breaking);
                 offer.terminal_range = stated.terminal_range.or(offer.terminal_range);
+                offer.let_through_A2s = stated.let_through_A2s.or(offer.let_through_A2s);
                 offer.full_rated |= stated.full_rated;
+                if stated.polarity == Polarity::Marked {
+                    offer.polarity = Polarity::Marked;
+                }
             }
-            let carries = Ratio::new::<ratio>(family.data().continuous_ratio);
-            let factor = run.rules.continuous_factor().value;
-            let need = least_rating(
-                bare.continuous,
-                bare.current - bare.continuous,
-                carries,
-                offer.full_rated,
-                factor,
-            );
+            let need = device_need(run, bare, family, offer.full_rated);
             let Ok(guard) =
                 choose(&offer, |_| if fixed.is_some() { ElectricCurrent::default() } else { need })
             else {

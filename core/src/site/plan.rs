@@ -21,6 +21,7 @@ use super::model::{CircuitEntry, Return, Site};
 use super::offers::{Offers, complete, joints};
 use super::reach::Reach;
 use super::read::{Problem, Problems};
+use super::smaller::{Neighbours, explain};
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
 use crate::error::Error;
@@ -51,10 +52,14 @@ pub(super) struct Refused {
 /// Why a size was refused.
 #[derive(Clone, Copy, Debug)]
 pub(super) enum Reason {
+    /// A check of its own fails.
     Check(Checked),
-    Error(Error),
-    /// Another circuit on the path failed its drop or voltage limit, and this one loses most.
+    /// A check of another circuit fails, on whose path this one lies.
     Path(Checked, usize),
+    /// Its constant power cannot be carried.
+    Error(Error),
+    /// By these numbers it would pass; with the currents that it would cause the whole plan does not.
+    Together,
 }
 
 /// One circuit of the plan.
@@ -93,11 +98,13 @@ pub(super) struct Plan {
 }
 
 /// A circuit before it is judged.
+#[derive(Clone)]
 pub(super) struct Draft {
     pub positive: Conductor,
     pub negative: Conductor,
     pub offered: Option<usize>,
-    pub refused: Vec<Refused>,
+    /// What can be had for it, smallest first.
+    pub sizes: Vec<Conductor>,
     pub joints: ElectricalResistance,
 }
 
@@ -121,23 +128,25 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
 
     // Each step enlarges at least one circuit; none is enlarged more often than there are sizes.
     // Then each far end gets at most one device.
-    let most = (2 * offers.sizes.len() + 1) * site.circuits.len() + 3;
+    let most = drafts.iter().map(|d| 2 * d.sizes.len() + 2).sum::<usize>() + 4;
     let mut temperatures: Vec<Option<f64>> = vec![None; site.circuits.len()];
-    let (mut shared_found, mut settled) = (false, false);
+    let (mut shared_found, mut trimmed, mut settled) = (false, false, false);
     // Far ends of designed circuits that no device further away guards well enough.
     let mut far_devices = vec![false; site.circuits.len()];
     for _ in 0..=most {
-        let conductors: Vec<(Conductor, Conductor, ElectricalResistance)> =
-            drafts.iter().map(|d| (d.positive, d.negative, d.joints)).collect();
-        let flows = Flows::new(site, &graph, &trees, &conductors, &temperatures);
-        if relieve_collapse(&flows, &mut drafts, &offers) {
+        let pass = |drafts: &[Draft], temperatures: &[Option<f64>], far_devices: &[bool]| {
+            let conductors: Vec<(Conductor, Conductor, ElectricalResistance)> =
+                drafts.iter().map(|d| (d.positive, d.negative, d.joints)).collect();
+            let flows = Flows::new(site, &graph, &trees, &conductors, temperatures);
+            let planned = judge_all(site, &trees, &offers, drafts, &feeding, far_devices, &flows)
+                .map_err(|problem| Problems(vec![problem], 0))?;
+            Ok::<_, Problems>((flows, planned))
+        };
+        let (flows, planned) = pass(&drafts, &temperatures, &far_devices)?;
+        if relieve_collapse(&flows, &mut drafts) {
             settled = false;
             continue;
         }
-        let planned = match judge_all(site, &trees, &offers, &drafts, &feeding, &far_devices, &flows) {
-            Ok(planned) => planned,
-            Err(problem) => return Err(Problems(vec![problem], 0)),
-        };
         for ((draft, circuit), done) in drafts.iter_mut().zip(&site.circuits).zip(&planned) {
             draft.joints = joints(circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
         }
@@ -145,22 +154,43 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
             .iter()
             .map(|p| p.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>()))
             .collect();
-        match enlarge(site, &offers, &mut drafts, &planned, &flows)? {
-            true => settled = false,
+        if enlarge(site, &mut drafts, &planned, &flows)? {
+            settled = false;
+        } else if !shared_found {
             // Shared runs are found; what hangs on them alone starts anew beside them, and grows no more than it must.
-            false if !shared_found => {
-                shared_found = true;
-                settled = false;
-                restart_leaves(&trees, &offers, &mut drafts);
-            }
-            false if add_far_devices(site, &trees, &planned, &mut far_devices) => settled = false,
+            (shared_found, settled) = (true, false);
+            restart_leaves(&trees, &mut drafts);
+        } else if add_far_devices(site, &trees, &planned, &mut far_devices) {
+            settled = false;
+        } else if !settled {
             // Once more with the temperatures and devices of this pass: what is reported is what was judged.
-            false if !settled => settled = true,
-            false => return Ok(Plan { trees, circuits: planned, collapsed: flows.collapsed }),
+            settled = true;
+        } else if !trimmed {
+            // Growing one by one may leave a shared run a size larger than what came after it needs.
+            trimmed = true;
+            let own = Neighbours { site, offers: &offers, planned: &planned, flows: &flows };
+            let fewest = failures(&planned);
+            let candidates: Vec<usize> = (0..drafts.len()).filter(|&c| own.spare(&drafts, c)).collect();
+            for circuit in candidates {
+                let Some(thinner) = drafts.get(circuit).and_then(Draft::thinner) else { continue };
+                let Some(kept) = drafts.get_mut(circuit).map(|d| core::mem::replace(d, thinner)) else {
+                    continue;
+                };
+                let (tried, judged) = pass(&drafts, &temperatures, &far_devices)?;
+                if tried.collapse.is_none() && failures(&judged) <= fewest {
+                    settled = false;
+                } else if let Some(draft) = drafts.get_mut(circuit) {
+                    *draft = kept;
+                }
+            }
+        } else {
+            let mut circuits = planned;
+            explain(site, &offers, &drafts, &flows, &mut circuits);
+            return Ok(Plan { trees, circuits, collapsed: flows.collapsed });
         }
     }
     Err(Problems(
-        alloc::vec![Problem {
+        vec![Problem {
             line: 0,
             place: "design".to_string(),
             text: "the design did not settle; state the sizes of some circuits".to_string(),
@@ -171,49 +201,62 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
 
 /// Where the network collapses: enlarges the designed run of the greatest resistance on the path; `false` where nothing
 /// collapsed, or nothing on the path can grow.
-fn relieve_collapse(flows: &Flows, drafts: &mut [Draft], offers: &Offers) -> bool {
-    let Some((path, error)) = &flows.collapse else { return false };
+fn relieve_collapse(flows: &Flows, drafts: &mut [Draft]) -> bool {
+    let Some((path, _)) = &flows.collapse else { return false };
     let mut worst: Option<(usize, f64)> = None;
     for &circuit in path {
         let ohms = flows.circuits.get(circuit).map_or(0.0, |f| f.ohms);
-        if can_grow(drafts, offers, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
+        if can_grow(drafts, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
             worst = Some((circuit, ohms));
         }
     }
-    worst.is_some_and(|(circuit, _)| grow(circuit, drafts, offers, Reason::Error(*error)))
+    worst.is_some_and(|(circuit, _)| grow(circuit, drafts))
 }
 
 /// Puts designed circuits that feed no board or bank back to the smallest size on offer.
-fn restart_leaves(trees: &[Tree], offers: &Offers, drafts: &mut [Draft]) {
-    let Some(first) = offers.sizes.first() else { return };
+fn restart_leaves(trees: &[Tree], drafts: &mut [Draft]) {
     for node in trees.iter().flat_map(|t| &t.nodes) {
         if matches!(node.item, Item::Load(_) | Item::Inverter(_))
             && let Some(draft) = node.circuit.and_then(|c| drafts.get_mut(c))
             && draft.offered.is_some()
         {
-            draft.offered = Some(0);
-            draft.positive = *first;
-            draft.negative = *first;
-            draft.refused.clear();
+            draft.take(0);
         }
     }
 }
 
+impl Draft {
+    /// Takes a size on offer; `false` where there is none.
+    fn take(&mut self, place: usize) -> bool {
+        let Some(conductor) = self.sizes.get(place) else { return false };
+        self.offered = Some(place);
+        self.positive = *conductor;
+        self.negative = *conductor;
+        true
+    }
+
+    /// The same one size smaller.
+    fn thinner(&self) -> Option<Self> {
+        let place = self.offered?.checked_sub(1)?;
+        let mut thinner = self.clone();
+        thinner.take(place).then_some(thinner)
+    }
+}
+
 /// Whether a circuit is designed and a larger size is on offer.
-fn can_grow(drafts: &[Draft], offers: &Offers, circuit: usize) -> bool {
-    drafts.get(circuit).and_then(|d| d.offered).is_some_and(|offered| offered + 1 < offers.sizes.len())
+fn can_grow(drafts: &[Draft], circuit: usize) -> bool {
+    drafts.get(circuit).is_some_and(|d| d.offered.is_some_and(|o| o + 1 < d.sizes.len()))
 }
 
 /// Takes the next size on offer; `false` where there is none.
-fn grow(circuit: usize, drafts: &mut [Draft], offers: &Offers, reason: Reason) -> bool {
-    let Some(draft) = drafts.get_mut(circuit) else { return false };
-    let Some(next) = draft.offered.map(|o| o + 1) else { return false };
-    let Some(conductor) = offers.sizes.get(next) else { return false };
-    draft.refused.push(Refused { size: draft.positive.size, by: reason });
-    draft.offered = Some(next);
-    draft.positive = *conductor;
-    draft.negative = *conductor;
-    true
+fn grow(circuit: usize, drafts: &mut [Draft]) -> bool {
+    drafts.get_mut(circuit).is_some_and(|d| d.offered.is_some_and(|o| d.take(o + 1)))
+}
+
+/// Failed checks of a plan.
+fn failures(planned: &[Option<Planned>]) -> usize {
+    let failed = |j: &Judgement| j.checks.iter().filter(|c| c.outcome == Outcome::Failed).count();
+    planned.iter().flatten().map(|p| failed(&p.judgement) + p.further.iter().map(failed).sum::<usize>()).sum()
 }
 
 /// Ends of each circuit that can feed, in the circuit's own direction.
@@ -343,7 +386,7 @@ fn judge_one(
         positive: draft.positive,
         negative: draft.negative,
         offered: draft.offered,
-        refused: draft.refused.clone(),
+        refused: Vec::new(),
         fitted,
         feeds: ends,
         run,
@@ -454,7 +497,6 @@ fn fit(
 /// Enlarges what fails; `true` where something grew.
 fn enlarge(
     site: &Site,
-    offers: &Offers,
     drafts: &mut [Draft],
     planned: &[Option<Planned>],
     flows: &Flows,
@@ -469,7 +511,7 @@ fn enlarge(
             .and_then(|p| p.as_ref())
             .map_or(0.0, |p| p.judgement.current.get::<ampere>());
         let areas = drafts.get(circuit).and_then(|d| {
-            let next = offers.sizes.get(d.offered? + 1)?;
+            let next = d.sizes.get(d.offered? + 1)?;
             Some(d.positive.size.area_mm2() * next.size.area_mm2())
         });
         areas.map_or(0.0, |product| amps / product)
@@ -488,7 +530,7 @@ fn enlarge(
         if let Some(check) = failed(false).filter(|c| mended_by_size(c.check))
             && p.designed()
         {
-            if grow(circuit, drafts, offers, Reason::Check(check)) {
+            if grow(circuit, drafts) {
                 grew = true;
             } else {
                 problems.push(cannot_serve(site, circuit, &check));
@@ -499,16 +541,16 @@ fn enlarge(
         let Some(check) = failed(true) else { continue };
         let path = flows.path(circuit);
         let mut worst: Option<(usize, f64)> = None;
-        for &c in path.iter().filter(|&&c| can_grow(drafts, offers, c)) {
+        for &c in path.iter().filter(|&&c| can_grow(drafts, c)) {
             let gain = worth(drafts, c);
             if worst.is_none_or(|(_, most)| gain > most) {
                 worst = Some((c, gain));
             }
         }
         match worst {
-            Some((c, _)) if c == circuit => grew |= grow(c, drafts, offers, Reason::Check(check)),
+            Some((c, _)) if c == circuit => grew |= grow(c, drafts),
             // A shared run grows once in a pass: the next pass sees what it won.
-            Some((c, _)) => return Ok(grow(c, drafts, offers, Reason::Path(check, circuit))),
+            Some((c, _)) => return Ok(grow(c, drafts)),
             None if p.designed() => problems.push(cannot_serve(site, circuit, &check)),
             None => {}
         }

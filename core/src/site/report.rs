@@ -17,7 +17,6 @@ use super::wiring::{findings, name_of, stud_of};
 use crate::cable::Conductor;
 use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
-use crate::error::Error;
 use crate::protection::{End, Guard};
 use crate::quantity::{ConductorSize, ElectricCurrent};
 use crate::rules::practice_figure;
@@ -161,10 +160,10 @@ fn line_of(site: &Site, circuit: &CircuitEntry, planned: &Planned) -> CircuitLin
     let name = |index: usize| site.circuits.get(index).map_or_else(String::new, |c| c.name.clone());
     let reason = |reason: &Reason| match reason {
         Reason::Check(checked) => checked.to_string(),
-        Reason::Error(Error::Collapse { .. }) => {
-            "no voltage carries the constant-power loads beyond it: they pull the line down".to_string()
-        }
         Reason::Error(error) => error.to_string(),
+        Reason::Together => {
+            "passes with the currents above, but not with those it would cause itself".to_string()
+        }
         Reason::Path(checked, other) => format!("path to \"{}\": {checked}", name(*other)),
     };
     let governing = match (planned.designed(), planned.refused.last()) {

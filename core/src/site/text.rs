@@ -15,7 +15,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::finding::{Severity, digits};
 use super::report::{CircuitLine, Report};
 use crate::cable::{Class, Coating, Conductor, Material};
-use crate::circuit::Outcome;
+use crate::circuit::{Outcome, bound};
 use crate::device::{Polarity, Supply};
 use crate::protection::Guard;
 use crate::rules::{Installation, Key, Space};
@@ -260,11 +260,7 @@ fn list(f: &mut fmt::Formatter<'_>, head: &str, lines: &[String]) -> fmt::Result
 
 /// Fault currents are bounds: two figures are as many as are honest.
 fn rounded(amps: f64) -> String {
-    if !(amps > 0.0 && amps.is_finite()) {
-        return "0".to_string();
-    }
-    let unit = libm::pow(10.0, libm::floor(libm::log10(amps)) - 1.0);
-    digits(libm::round(amps / unit) * unit)
+    digits(bound(amps))
 }
 
 /// Names come from a file: control characters must not reach a terminal.

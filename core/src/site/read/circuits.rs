@@ -208,13 +208,9 @@ fn lengths(entry: &mut Entry<'_, '_>) -> Option<(Length, Length)> {
     None
 }
 
-/// Metal, stranding and coating of a conductor.
-pub(super) fn metal(entry: &mut Entry<'_, '_>) -> (Material, Class, Coating) {
-    (
-        entry.word(&MATERIAL, MATERIAL_WORDS).unwrap_or(Material::Copper),
-        class(entry).unwrap_or(Class::Flexible),
-        entry.word(&COATING, COATING_WORDS).unwrap_or(Coating::Plain),
-    )
+/// Metal, stranding and coating of a conductor, as far as they are stated.
+pub(super) fn metal(entry: &mut Entry<'_, '_>) -> (Option<Material>, Option<Class>, Option<Coating>) {
+    (entry.word(&MATERIAL, MATERIAL_WORDS), class(entry), entry.word(&COATING, COATING_WORDS))
 }
 
 fn class(entry: &mut Entry<'_, '_>) -> Option<Class> {

@@ -7,6 +7,7 @@ use super::keys::{
     SIZE, STOCK, STOCK_CABLE, STOCK_DEVICE, STOCK_DEVICES, STOCK_LUG, STUD, TERMINAL,
 };
 use super::log::Log;
+use crate::cable::{Class, Coating, Material};
 use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
 
 /// What could not be read is left out: its problems refuse the file in any case.
@@ -41,9 +42,9 @@ fn cable(entry: &mut Entry<'_, '_>) -> Option<StockCable> {
     Some(StockCable {
         line: entry.line(),
         size: size?,
-        material,
-        class,
-        coating,
+        material: material.unwrap_or(Material::Copper),
+        class: class.unwrap_or(Class::Flexible),
+        coating: coating.unwrap_or(Coating::Plain),
         insulation: insulation?,
         sheathed,
         length,

@@ -1,0 +1,121 @@
+//! What smaller sizes would do in the finished plan: whether one is left to save, and why each was refused.
+//!
+//! Currents are those of the plan: a smaller size raises them a little for constant-power loads, so what passes here
+//! is tried on the whole plan before it is taken.
+
+use alloc::vec::Vec;
+
+use uom::si::electric_potential::volt;
+
+use super::flow::Flows;
+use super::model::Site;
+use super::offers::Offers;
+use super::plan::{Draft, Planned, Reason, Refused};
+use crate::cable::Conductor;
+use crate::circuit::{Checked, Outcome, Relation, judge};
+use crate::error::Error;
+use crate::quantity::ElectricPotential;
+use crate::rules::Check;
+
+/// A finished plan as the neighbourhood of one circuit.
+pub(super) struct Neighbours<'a> {
+    pub site: &'a Site,
+    pub offers: &'a Offers,
+    pub planned: &'a [Option<Planned>],
+    pub flows: &'a Flows,
+}
+
+impl Neighbours<'_> {
+    /// Whether the next smaller size of a designed circuit would fail nothing here.
+    pub fn spare(&self, drafts: &[Draft], circuit: usize) -> bool {
+        let next = drafts.get(circuit).and_then(|d| d.sizes.get(d.offered?.checked_sub(1)?));
+        next.is_some_and(|next| matches!(self.against(drafts, circuit, next), Some(Reason::Together)))
+    }
+
+    /// What speaks against a conductor in the place of a circuit's own; `None` where the circuit is not in the plan.
+    fn against(&self, drafts: &[Draft], circuit: usize, conductor: &Conductor) -> Option<Reason> {
+        let planned = self.planned.get(circuit)?.as_ref()?;
+        let mut draft = drafts.get(circuit)?.clone();
+        draft.positive = *conductor;
+        draft.negative = *conductor;
+        let stated = self.site.circuits.get(circuit)?;
+        let bare = match judge(&planned.run, conductor, conductor, None) {
+            Ok(bare) => bare,
+            Err(error @ Error::NoSolution { .. }) => return Some(Reason::Error(error)),
+            Err(error) => return Some(Reason::Error(error)),
+        };
+        let guard = match planned.fitted.first() {
+            None => None,
+            Some(first) => {
+                let entry = first.entry.and_then(|e| stated.devices.get(e));
+                if first.designed {
+                    self.offers.best(&planned.run, &draft, &bare, entry)
+                } else {
+                    Some(first.guard)
+                }
+            }
+        };
+        let judged = judge(&planned.run, conductor, conductor, guard.as_ref()).ok()?;
+        if let Some(failed) = judged.first_failure() {
+            return Some(Reason::Check(*failed));
+        }
+        let lost: ElectricPotential =
+            planned.judgement.current * (judged.resistance - planned.judgement.resistance);
+        let lost = lost.get::<volt>();
+        // What hangs behind it loses those volts too.
+        for (other, behind) in self.planned.iter().enumerate() {
+            let Some(behind) = behind else { continue };
+            if other == circuit || !self.flows.path(other).contains(&circuit) {
+                continue;
+            }
+            let nominal = behind.run.nominal.get::<volt>();
+            for checked in &behind.judgement.checks {
+                let shifted = match checked.check {
+                    Check::Drop => Checked { actual: checked.actual + 100.0 * lost / nominal, ..*checked },
+                    Check::LoadVoltage | Check::StartVoltage => {
+                        Checked { actual: checked.actual - lost, ..*checked }
+                    }
+                    _ => continue,
+                };
+                let fails = match shifted.relation {
+                    Relation::AtMost => shifted.actual > shifted.limit,
+                    Relation::AtLeast => shifted.actual < shifted.limit,
+                    Relation::Plain => false,
+                };
+                if fails && checked.outcome == Outcome::Passed {
+                    return Some(Reason::Path(Checked { outcome: Outcome::Failed, ..shifted }, other));
+                }
+            }
+        }
+        Some(Reason::Together)
+    }
+}
+
+/// Fills in, for every designed circuit, each smaller size on offer with its reason, smallest first.
+pub(super) fn explain(
+    site: &Site,
+    offers: &Offers,
+    drafts: &[Draft],
+    flows: &Flows,
+    planned: &mut [Option<Planned>],
+) {
+    let reasons: Vec<Vec<Refused>> = {
+        let own = Neighbours { site, offers, planned, flows };
+        drafts
+            .iter()
+            .enumerate()
+            .map(|(circuit, draft)| {
+                let smaller = draft.offered.and_then(|o| draft.sizes.get(..o)).unwrap_or_default();
+                smaller
+                    .iter()
+                    .filter_map(|c| Some(Refused { size: c.size, by: own.against(drafts, circuit, c)? }))
+                    .collect()
+            })
+            .collect()
+    };
+    for (planned, refused) in planned.iter_mut().zip(reasons) {
+        if let Some(planned) = planned {
+            planned.refused = refused;
+        }
+    }
+}
