@@ -99,6 +99,7 @@ pub fn pairs() -> Vec<Pair> {
         // No rule of thumb holds for lithium: not checked, and not passed.
         Pair {
             severity: NotChecked,
+            slug: "breaking-capacity-not-checked",
             ..breaking(
                 "the fault current of a lithium bank is stated or not checked",
                 Document::run("craft_us")
@@ -110,6 +111,7 @@ pub fn pairs() -> Vec<Pair> {
         },
         Pair {
             severity: NotChecked,
+            slug: "breaking-capacity-not-checked",
             ..breaking(
                 "a breaking capacity is stated or not checked",
                 Document::run("iec").with("circuit.device", "breaking = none; ?"),
@@ -146,7 +148,7 @@ pub fn pairs() -> Vec<Pair> {
         Pair {
             rule: "R6",
             edge: "a DC voltage is stated or not checked",
-            slug: "device-not-for-this-supply",
+            slug: "device-supply-not-checked",
             severity: NotChecked,
             site: Document::run("craft_us").with("circuit.device", "dc_voltage = none; ?"),
             passing: "dc_voltage = '32 V'",
