@@ -203,5 +203,16 @@ pub fn pairs() -> Vec<Pair> {
             "9.8 A",
             "10.2 A",
         ),
+        // What nobody stated is not checked, and is no pass.
+        Pair {
+            rule: "R3",
+            edge: "a load without its least voltage is not checked",
+            slug: "least-voltage-not-stated",
+            severity: NotChecked,
+            site: Document::run("iec").with("load", "least = none; ?"),
+            passing: "least = '9 V'",
+            failing: "",
+            also: &[],
+        },
     ]
 }

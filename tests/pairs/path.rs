@@ -209,17 +209,6 @@ pub fn pairs() -> Vec<Pair> {
         // Under craft rules the engine block may carry the return, for cranking and alternator only.
         engine_block("craft_iso"),
         engine_block("craft_us"),
-        // What nobody stated is not checked, and is no pass.
-        Pair {
-            rule: "R3",
-            edge: "a load without its least voltage is not checked",
-            slug: "least-voltage-not-stated",
-            severity: NotChecked,
-            site: Document::run("iec").with("load", "least = none; ?"),
-            passing: "least = '9 V'",
-            failing: "",
-            also: &[],
-        },
     ]
 }
 
