@@ -4,7 +4,7 @@
 //! Temperature θ = air + (rating − air)·(I/Iz)², factor (234.5 + θ)/254.5. Generic joints, common practice, no source: a
 //! lug 0.1 mΩ, a fuse with its holder 100 mV at its rating.
 
-use ampwright::site::Severity::{Advice, Danger, Nonconforming, NotChecked};
+use ampwright::site::Severity::{Advice, Danger, Nonconforming};
 
 use crate::document::{Document, device};
 use crate::pair::Pair;
