@@ -106,8 +106,18 @@ pub fn pairs() -> Vec<Pair> {
             "70 degC",
         ),
         above(
+            "XLPE counts as PVC at an unmarked device",
+            breaker("28 A")
+                .with("circuit", "insulation = 'XLPE 90 degC'; terminal = '90 degC'")
+                .with("circuit.device", "?"),
+            "terminal = '90 degC'",
+            "",
+        ),
+        above(
             "XLPE counts as PVC at unmarked terminals",
-            breaker("28 A").with("circuit", "insulation = 'XLPE 90 degC'; ?"),
+            breaker("28 A")
+                .with("circuit", "insulation = 'XLPE 90 degC'; ?")
+                .with("circuit.device", "terminal = '90 degC'"),
             "terminal = '90 degC'",
             "",
         ),
@@ -154,7 +164,7 @@ pub fn pairs() -> Vec<Pair> {
         Pair {
             rule: "R4",
             edge: "beyond the table nothing passes",
-            slug: "ampacity-exceeded",
+            slug: "ampacity-not-checked",
             severity: NotChecked,
             site: Document::run("iec")
                 .with("load", "current = '5 A'")

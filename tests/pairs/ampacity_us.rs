@@ -183,7 +183,7 @@ pub fn pairs() -> Vec<Pair> {
         Pair {
             rule: "R4",
             edge: "a size that its column does not list is not checked",
-            slug: "terminal-column-exceeded",
+            slug: "terminal-column-not-checked",
             severity: NotChecked,
             site: Document::run("us")
                 .with("load", "current = '5 A'")

@@ -32,7 +32,7 @@ const FAULTS: [(&str, &str, Severity); 15] = [
     // 800/0.85/10.5 = 89.6 A, × 1.25 = 112 A; at nominal 66.7 A, × 1.25 = 83.3 A, which 4 AWG (85 A) and 90 A would bear.
     (r#"circuit "inverter feed""#, "feed-sized-at-nominal", Danger),
     (r#"circuit "sender""#, "chassis-return", Danger),
-    // 100 A against 225 + 125 A.
+    // 100 A against 250 + 125 A.
     (r#"board "main""#, "busbar-below-sum", Danger),
     // 1.6 × 20 A = 32 A against 1.45 × 20 A = 29 A (12 AWG, 60 °C).
     (r#"circuit "heater", F11"#, "device-opens-late", Danger),

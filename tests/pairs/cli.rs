@@ -173,7 +173,7 @@ fn a_loop_is_named_by_the_circuit_that_closes_it() {
 }
 
 #[test]
-fn no_load_is_an_error_for_design_and_none_for_inspection() {
+fn no_load_is_an_error_for_design() {
     let head = "format = 1\n[site]\nname = \"a\"\nrules = \"us\"\nearthing = \"negative\"\n\
                 ambient = [\"0 degC\", \"30 degC\"]\n[[bank]]\nname = \"bank\"\nchemistry = \"agm\"\n\
                 nominal = \"12 V\"\ncapacity = \"100 Ah\"\ncut_off = \"10.5 V\"\nhighest = \"15 V\"\n\
@@ -181,12 +181,6 @@ fn no_load_is_an_error_for_design_and_none_for_inspection() {
                 name = \"feeder\"\nfrom = \"bank\"\nto = \"board\"\none_way = \"1 m\"\n";
     let design = file("no_load_design.toml", head.as_bytes());
     is_refused(&[design], &[&["line 18, ", "[[circuit]] \"feeder\"", "no [[load]] is stated"]]);
-    let stated = format!(
-        "{head}size = \"10 AWG\"\ninsulation = \"PVC 75 degC\"\n[[circuit.device]]\nfamily = \"class T\"\n\
-         rating = \"30 A\"\ndc_voltage = \"125 V\"\nbreaking = \"20 kA\"\nfrom_source = \"0.1 m\"\n"
-    );
-    let (status, out, err) = run([file("no_load_inspection.toml", stated.as_bytes())]);
-    assert_eq!((status, err.as_str()), (0, ""), "{out}");
 }
 
 #[test]

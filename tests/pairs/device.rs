@@ -75,6 +75,7 @@ pub fn pairs() -> Vec<Pair> {
         // Strip fuse-links of one shape differ widely in when they open: no current is held, so nothing passes.
         Pair {
             severity: NotChecked,
+            slug: "opening-current-not-checked",
             ..late(
                 "a family without a known edge is not checked",
                 Document::run("craft_iso").with("circuit.device", "family = '?'; rating = '30 A'"),

@@ -31,7 +31,7 @@ impl Document {
             }
             "iec" => ("size = '2.5 mm2'; insulation = 'PVC 70 degC'; installed = 'clipped'", "gG"),
             "craft_iso" => ("size = '2.5 mm2'; insulation = 'PVC 105 degC'", "class T"),
-            _ => ("size = '10 AWG'; class = 2; insulation = 'PVC 105 degC'", "class T"),
+            _ => ("size = '10 AWG'; insulation = 'PVC 105 degC'", "class T"),
         };
         Self(Vec::new())
             .add(
@@ -48,6 +48,22 @@ impl Document {
             .add("load", "name = 'load'; current = '10 A'; least = '1 V'; greatest = '100 V'")
             .add("circuit", &format!("name = 'run'; from = 'bank'; to = 'load'; one_way = '1 m'; {conductor}"))
             .add("circuit.device", &device(family, "20 A"))
+    }
+
+    /// As [`Document::run`], but from a board that a fuse of 30 A and a short feeder join to the bank.
+    pub fn run_from_board(rules: &str) -> Self {
+        let size = if rules.ends_with("us") { "10 AWG" } else { "6 mm2" };
+        Self::run(rules)
+            .with("circuit", "from = 'board'")
+            .add("board", "name = 'board'; busbar = '100 A'")
+            .add(
+                "circuit",
+                &format!(
+                    "name = 'feeder'; from = 'bank'; to = 'board'; one_way = '0.5 m'; size = '{size}'; \
+                     insulation = 'PVC 90 degC'"
+                ),
+            )
+            .add("circuit.device", &device("class T", "30 A"))
     }
 
     /// Adds a section with these keys behind the others; what belongs to a circuit follows its circuit.

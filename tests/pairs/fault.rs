@@ -96,9 +96,23 @@ pub fn pairs() -> Vec<Pair> {
             "5.05 kA",
             "4.85 kA",
         ),
+        // One bank may be switched off: 11.88 V behind 22.5 mΩ (empty, cold, aged), feed of hot 50 mm² with lugs and a 63 A
+        // fuse 0.462 + 0.4 + 1.587 mΩ, branch lugs and fuse 5.4 mΩ. gG 20 A opens at 32 A, 371.3 mΩ: 340.9/9.548 = 35.7 m,
+        // route 17.9 m. Both banks together would reach 18.5 m.
+        Pair {
+            rule: "R6",
+            edge: "the least fault current comes from one bank alone",
+            slug: "least-fault-too-small",
+            severity: Danger,
+            site: two_banks().with("load", "current = '0.2 A'").with("circuit", "one_way = '?'"),
+            passing: "17.6 m",
+            failing: "18.1 m",
+            also: &[],
+        },
         // No rule of thumb holds for lithium: not checked, and not passed.
         Pair {
             severity: NotChecked,
+            slug: "breaking-capacity-not-checked",
             ..breaking(
                 "the fault current of a lithium bank is stated or not checked",
                 Document::run("craft_us")
@@ -110,6 +124,7 @@ pub fn pairs() -> Vec<Pair> {
         },
         Pair {
             severity: NotChecked,
+            slug: "breaking-capacity-not-checked",
             ..breaking(
                 "a breaking capacity is stated or not checked",
                 Document::run("iec").with("circuit.device", "breaking = none; ?"),
@@ -146,7 +161,7 @@ pub fn pairs() -> Vec<Pair> {
         Pair {
             rule: "R6",
             edge: "a DC voltage is stated or not checked",
-            slug: "device-not-for-this-supply",
+            slug: "device-supply-not-checked",
             severity: NotChecked,
             site: Document::run("craft_us").with("circuit.device", "dc_voltage = none; ?"),
             passing: "dc_voltage = '32 V'",

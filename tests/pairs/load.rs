@@ -148,6 +148,39 @@ pub fn pairs() -> Vec<Pair> {
             failing: "",
             also: &[],
         },
+        // The reserve alone at 10.5 V: branch 2 × 8.466 + 6.65 = 23.6 mΩ; link of 6 mm², 10 A of 46 A, 31.9 °C, 3.454 mΩ/m,
+        // its 20 A fuse and lugs 5.4 mΩ. (10.5 − 9.5) V/10 A = 100 mΩ leave 71.0/3.454 = 20.6 m, route 10.3 m.
+        Pair {
+            rule: "R3",
+            edge: "each bank may have to feed alone",
+            slug: "voltage-too-low-at-load",
+            severity: Nonconforming,
+            site: Document::run("iec")
+                .with("load", "least = '9.5 V'")
+                .with("circuit", "from = 'board'; drop = '20 %'")
+                .with("circuit.device", "rating = '16 A'")
+                .add(
+                    "bank",
+                    "name = 'reserve'; chemistry = 'agm'; nominal = '12 V'; capacity = '100 Ah'; \
+                     cut_off = '10.5 V'; highest = '15 V'; internal_resistance = '5 mohm'",
+                )
+                .add("board", "name = 'board'; busbar = '100 A'")
+                .add(
+                    "circuit",
+                    "name = 'feeder'; from = 'bank'; to = 'board'; one_way = '1 m'; size = '6 mm2'; \
+                     insulation = 'PVC 70 degC'; installed = 'clipped'; drop = '20 %'",
+                )
+                .add("circuit.device", &device("gG", "20 A"))
+                .add(
+                    "circuit",
+                    "name = 'link'; from = 'board'; to = 'reserve'; one_way = '?'; size = '6 mm2'; \
+                     insulation = 'PVC 70 degC'; installed = 'clipped'; drop = '20 %'",
+                )
+                .add("circuit.device", &format!("{}; end = 'to'", device("gG", "20 A"))),
+            passing: "10.0 m",
+            failing: "10.5 m",
+            also: &[],
+        },
         // The feeder of two boards carries what both draw: 10 A and 10 A over a 20 A fuse that carries all of it.
         below(
             "a feeder carries the sum of its loads",
@@ -170,5 +203,16 @@ pub fn pairs() -> Vec<Pair> {
             "9.8 A",
             "10.2 A",
         ),
+        // What nobody stated is not checked, and is no pass.
+        Pair {
+            rule: "R3",
+            edge: "a load without its least voltage is not checked",
+            slug: "least-voltage-not-stated",
+            severity: NotChecked,
+            site: Document::run("iec").with("load", "least = none; ?"),
+            passing: "least = '9 V'",
+            failing: "",
+            also: &[],
+        },
     ]
 }

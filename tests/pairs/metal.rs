@@ -32,14 +32,15 @@ pub fn pairs() -> Vec<Pair> {
         pairs.push(refused(
             "no solid conductor where a cable moves",
             Nonconforming,
-            Document::run(set).with("circuit", "moving = true; class = ?"),
+            Document::run_from_board(set).with("circuit", "moving = true; class = ?"),
             "5",
             "1",
         ));
     }
     for set in ["craft_iso", "craft_us"] {
-        let class =
-            |moving: &str| Document::run(set).with("circuit", &format!("moving = {moving}; class = ?"));
+        let class = |moving: &str| {
+            Document::run_from_board(set).with("circuit", &format!("moving = {moving}; class = ?"))
+        };
         pairs.push(refused("no solid conductor under craft rules", Nonconforming, class("false"), "2", "1"));
         pairs.push(refused(
             "no class 2 conductor where a cable moves under craft rules",
@@ -66,9 +67,19 @@ pub fn pairs() -> Vec<Pair> {
         pairs.push(refused(
             "solid conductors pass in fixed wiring only",
             Nonconforming,
-            Document::run(set).with("circuit", "class = 1; moving = ?"),
+            Document::run_from_board(set).with("circuit", "class = 1; moving = ?"),
             "false",
             "true",
+        ));
+    }
+    // What leaves a bank counts as a battery cable, whatever else is stated.
+    for set in ["us", "iec"] {
+        pairs.push(refused(
+            "no solid conductor at a battery",
+            Nonconforming,
+            Document::run(set).with("circuit", "class = ?"),
+            "2",
+            "1",
         ));
     }
     pairs

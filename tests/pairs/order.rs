@@ -15,9 +15,9 @@ use crate::document::Document;
 
 /// Some hundred additions in another order: 1e-12 of a number, and room for differences of nearly equal ones.
 const SUMS: f64 = 1e-9;
-/// A pass takes conductor temperatures from the pass before, and a design makes more passes than an inspection: up to
-/// 3e-5 of a number have been seen.
-const PASSES: f64 = 1e-4;
+/// A pass takes conductor temperatures from the pass before, and a design makes more passes than an inspection: some 1e-6
+/// of a number have been seen.
+const PASSES: f64 = 1e-5;
 
 /// A document in pieces: its head, then one piece a section with what belongs to it.
 fn pieces(text: &str) -> Vec<String> {
@@ -111,17 +111,11 @@ proptest! {
 
     #[test]
     fn order_of_circuits_and_loads_changes_no_number(keys in prop::collection::vec(any::<u64>(), 60)) {
-        for text in [BADLY_BUILT.to_string(), stated_heron_point()] {
+        for text in [BADLY_BUILT.to_string(), HERON_POINT.to_string(), stated_heron_point()] {
             let (before, after) = (report(&text), report(&reordered(&text, &keys)));
             assert_same(&before, &after, SUMS)?;
             prop_assert_eq!(kinds(&before), kinds(&after));
         }
-    }
-
-    #[test]
-    fn no_order_makes_a_design_fail(keys in prop::collection::vec(any::<u64>(), 60)) {
-        let designed = report(&reordered(HERON_POINT, &keys));
-        prop_assert_eq!(designed.exit_code(), 0, "{}", designed);
     }
 }
 
@@ -207,7 +201,7 @@ fn stud_of(site: &Site, name: &str) -> Option<Stud> {
 fn to_be_designed() -> Vec<String> {
     let mut texts = vec![HERON_POINT.to_string()];
     for set in ["us", "iec", "craft_iso", "craft_us"] {
-        let stranding = if set.ends_with("us") { "class = none" } else { "" };
+        let stranding = if set == "us" { "class = none" } else { "" };
         for (load, length) in [("10 A", "4 m"), ("35 A", "12 m"), ("2 A", "40 m")] {
             texts.push(
                 Document::run(set)

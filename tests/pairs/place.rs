@@ -44,25 +44,6 @@ fn pole(
     }
 }
 
-/// The run starts at a board that a bank feeds.
-fn from_board(set: &str) -> Document {
-    let (size, family) = match set {
-        "us" | "craft_us" => ("10 AWG", "class T"),
-        _ => ("6 mm2", "class T"),
-    };
-    Document::run(set)
-        .with("circuit", "from = 'board'")
-        .add("board", "name = 'board'; busbar = '100 A'")
-        .add(
-            "circuit",
-            &format!(
-                "name = 'feeder'; from = 'bank'; to = 'board'; one_way = '0.5 m'; size = '{size}'; class = 2; \
-                 insulation = 'PVC 105 degC'"
-            ),
-        )
-        .add("circuit.device", &device(family, "30 A"))
-}
-
 /// A link between two banks, with a device at its beginning and one that guards an end to be told.
 fn link(set: &str) -> Document {
     Document::run(set)
@@ -108,7 +89,7 @@ pub fn pairs() -> Vec<Pair> {
         // 7 in = 177.8 mm.
         distance("7 in from the source", Document::run("craft_us"), "175 mm", "180 mm"),
         // 40 in = 1.016 m, at a board.
-        distance("40 in in a sheath", sheathed(from_board("craft_us")), "1.0 m", "1.03 m"),
+        distance("40 in in a sheath", sheathed(Document::run_from_board("craft_us")), "1.0 m", "1.03 m"),
         // 72 in = 1.829 m, at the bank.
         distance(
             "72 in in a sheath from a battery post",
