@@ -81,6 +81,15 @@ impl Checked {
         Self { check, outcome, actual: 0.0, limit: 0.0, unit: "", relation: Relation::Plain, what, citation }
     }
 
+    /// Whether it speaks against taking a size: it failed, or no table gives the capacity.
+    pub fn is_obstacle(&self) -> bool {
+        match self.outcome {
+            Outcome::Passed => false,
+            Outcome::Failed => true,
+            Outcome::NotChecked => matches!(self.check, Check::Ampacity | Check::TerminalColumn),
+        }
+    }
+
     /// Part of the limit that is used; above 1 it failed. Nothing for checks without numbers or not made.
     pub fn used(&self) -> Option<f64> {
         if self.outcome == Outcome::NotChecked {
@@ -152,6 +161,9 @@ pub fn bound(amps: f64) -> f64 {
 
 impl fmt::Display for Checked {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        if self.check == Check::DeviceProtects {
+            f.write_str("device against its conductor, ")?;
+        }
         match (self.relation, self.outcome) {
             (Relation::Plain, _) | (_, Outcome::NotChecked) => write!(f, "{}", self.what)?,
             _ => write!(f, "{}: {}", self.what, self.numbers())?,

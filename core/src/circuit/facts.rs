@@ -7,7 +7,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::checked::{Checked, Outcome};
 use super::run::Run;
-use crate::cable::{Conductor, adiabatic_k};
+use crate::cable::{Conductor, Material, adiabatic_k};
 use crate::citation::{Citation, Seen};
 use crate::device::{Polarity, Supply};
 use crate::error::Error;
@@ -26,6 +26,8 @@ const ADIABATIC_IEC: Citation = Citation::new("IEC 60364-4-43:2008", "434.5.2, T
 /// The same law for the sets that print no k: heat of the fault kept in the metal.
 const ADIABATIC_LAW: Citation =
     Citation::new("adiabatic law", "k of the metal between rating and short-circuit limit", Seen::Derived);
+/// The least fault opens no device, but the conductor carries it.
+const BORNE: &str = "least prospective current opens no device, but the conductor bears it for ever: it";
 /// Longest opening time of an instantaneous trip, s.
 const INSTANTANEOUS_S: f64 = 0.1;
 const INSTANTANEOUS: Citation =
@@ -104,6 +106,12 @@ impl Facts<'_> {
     /// (a) of R4, `us` only: the terminal's column, before derating.
     pub fn terminal_column(&self) -> Option<Checked> {
         let need = self.factored();
+        if self.thinner.material != Material::Copper
+            && let Err(error) = self.ampacity
+        {
+            let applies = self.run.rules.set().terminal.is_some();
+            return applies.then(|| not_tabulated(Check::TerminalColumn, "terminal's column", *error));
+        }
         match self.run.rules.terminal_column(self.thinner.size, need, self.marked_degC()) {
             Ok(None) => None,
             Ok(Some((cell, column))) => Some(Checked::at_most(
@@ -198,6 +206,14 @@ impl Facts<'_> {
                 Outcome::Failed,
                 "the family opens on short-circuit only; add an overload device",
                 device.family.data().source,
+            ));
+        }
+        if let Some(rule) = self.run.rules.refuses_family(device.family) {
+            return Some(Checked::plain(
+                Check::DeviceProtects,
+                Outcome::Failed,
+                "a supplementary protector alone does not guard a circuit; put a fuse or breaker before it",
+                rule,
             ));
         }
         Some(match self.ampacity {
@@ -321,6 +337,16 @@ impl Facts<'_> {
                 what,
                 own("R6"),
             ),
+            (Some(breaking), None) if self.run.fault_floor.is_some_and(|floor| breaking < floor) => {
+                Checked::at_least(
+                    Check::Breaking,
+                    breaking.get::<ampere>() / 1000.0,
+                    self.run.fault_floor.map_or(0.0, |floor| floor.get::<ampere>() / 1000.0),
+                    "kA",
+                    "what it breaks against the part of the greatest prospective current that is known",
+                    own("R6"),
+                )
+            }
             (None, _) => Checked::plain(
                 Check::Breaking,
                 Outcome::NotChecked,
@@ -355,6 +381,20 @@ impl Facts<'_> {
                 own("R6"),
             ));
         };
+        // Too little to open the device, and too little to hurt the conductor: it bears it for ever.
+        if let Ok(ampacity) = self.ampacity
+            && least <= ampacity.corrected
+            && least < times * device.rating
+        {
+            return Some(Checked::at_most(
+                Check::LeastFault,
+                least.get::<ampere>(),
+                ampacity.corrected.get::<ampere>(),
+                "A",
+                BORNE,
+                own("R6"),
+            ));
+        }
         Some(Checked::at_least(
             Check::LeastFault,
             least.get::<ampere>(),
@@ -389,7 +429,17 @@ impl Facts<'_> {
             && amps >= times * device.rating.get::<ampere>()
         {
             let energy = amps * amps * INSTANTANEOUS_S;
-            return Some(Checked::at_most(Check::Withstand, energy, bearable, "A²s", what, INSTANTANEOUS));
+            // A bound from above: passing it is proof, failing it is none.
+            if energy <= bearable {
+                return Some(Checked::at_most(
+                    Check::Withstand,
+                    energy,
+                    bearable,
+                    "A²s",
+                    what,
+                    INSTANTANEOUS,
+                ));
+            }
         }
         // A fuse that guards against overload and breaks the fault guards against short-circuit too.
         let guards = self.device_protects().is_some_and(|c| c.outcome == Outcome::Passed)

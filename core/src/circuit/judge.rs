@@ -8,14 +8,15 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::checked::{Checked, Outcome};
 use super::facts::Facts;
 use super::run::{Demand, Run};
-use crate::cable::{Conductor, linear_resistance};
+use crate::cable::{Conductor, Material, linear_resistance};
+use crate::citation::{Citation, Seen};
 use crate::error::Error;
 use crate::network::line_delivery;
 use crate::protection::Guard;
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio, ThermodynamicTemperature,
 };
-use crate::rules::{Ampacity, AmpacityQuery, Check, Key};
+use crate::rules::{Ampacity, AmpacityQuery, Check, Key, Space};
 
 /// Everything found about one run.
 #[derive(Clone, Debug, PartialEq)]
@@ -48,6 +49,11 @@ pub struct Judgement {
 }
 
 impl Judgement {
+    /// The first check that speaks against taking a size: one that failed, or a capacity that no table gives.
+    pub fn first_obstacle(&self) -> Option<&Checked> {
+        self.checks.iter().find(|c| c.is_obstacle())
+    }
+
     /// The first failed check in the rule set's order.
     pub fn first_failure(&self) -> Option<&Checked> {
         self.checks.iter().find(|c| c.outcome == Outcome::Failed)
@@ -105,14 +111,19 @@ pub fn judge(
     run.check()?;
     let thinner = if positive.size.area() <= negative.size.area() { positive } else { negative };
     let rating_degC = counted_rating(run, thinner, guard);
-    let ampacity = run.rules.ampacity(&AmpacityQuery {
-        size: thinner.size,
-        rating_degC,
-        installation: run.installation,
-        ambient: run.ambient,
-        space: run.space,
-        bundled_conductors: run.bundled_conductors,
-    });
+    // The sets' tables held are copper's.
+    let ampacity = if thinner.material == Material::Copper {
+        run.rules.ampacity(&AmpacityQuery {
+            size: thinner.size,
+            rating_degC,
+            installation: run.installation,
+            ambient: run.ambient,
+            space: run.space,
+            bundled_conductors: run.bundled_conductors,
+        })
+    } else {
+        Err(OTHER_METALS)
+    };
 
     // First with the conductor at its greatest temperature, then at the one its current gives (R2).
     let hot = ThermodynamicTemperature::new::<degree_celsius>(thinner.insulation.rating_degC());
@@ -125,7 +136,7 @@ pub fn judge(
         Demand::Power { .. } => drawn(run, resistance)?,
     };
 
-    let drop = current * resistance;
+    let drop = run.low_current.unwrap_or(current) * resistance;
     let end_voltage = run.beginning - drop;
     let path_drop: Ratio = (run.drop_before + drop) / run.nominal;
     let least_fault = run.weakest_source.map(|s| s.emf / (s.resistance + hot_ohms));
@@ -182,6 +193,12 @@ pub fn judge(
     Ok(judged)
 }
 
+const OTHER_METALS: Error = Error::NotTabulated {
+    what: "conductors of another metal than copper",
+    table: Citation::new("the tables held", "copper only", Seen::Derived),
+    remedy: "use copper, or have them judged by the standard's own table",
+};
+
 /// The lowest temperature rating of insulation, lug, terminal and device picks the column (R4). Under `us` the
 /// terminal has a check of its own; under `iec` an unmarked terminal counts as made for PVC, 70 °C.
 fn counted_rating(run: &Run, conductor: &Conductor, guard: Option<&Guard>) -> f64 {
@@ -223,12 +240,23 @@ fn drawn(run: &Run, resistance: ElectricalResistance) -> Result<(ElectricCurrent
     })
 }
 
+/// Air around the conductor, °C: an engine space and a sunlit roof are hotter than the ambient stated.
+fn air_degC(run: &Run) -> f64 {
+    let ambient = run.ambient.get::<degree_celsius>();
+    let set = run.rules.set();
+    match run.space {
+        Space::Ordinary => ambient,
+        Space::Engine => set.engine.map_or(ambient, |e| ambient.max(e.ambient_degC)),
+        Space::Rooftop => ambient + set.rooftop_K.map_or(0.0, |k| k.value),
+    }
+}
+
 /// Where an overloaded conductor's computed temperature ends, °C: the resistance tables end not far above.
 const HOTTEST: f64 = 200.0;
 
 /// Conductor temperature at a current: the rise goes with the square of the current, from ambient at none to the
-/// rating at the ampacity. Slightly high below the ampacity,
-/// since a cooler conductor also loses less; an overloaded one goes beyond its rating.
+/// rating at the ampacity. Slightly high below the ampacity, since a cooler conductor also loses less; an overloaded one
+/// goes beyond its rating.
 fn operating_temperature(
     run: &Run,
     current: ElectricCurrent,
@@ -237,7 +265,7 @@ fn operating_temperature(
 ) -> ThermodynamicTemperature {
     let Some(ampacity) = ampacity else { return rating };
     let used: f64 = (current / ampacity.corrected).get::<ratio>();
-    let (ambient, top) = (run.ambient.get::<degree_celsius>(), rating.get::<degree_celsius>());
+    let (ambient, top) = (air_degC(run), rating.get::<degree_celsius>());
     let rise = (top - ambient) * used * used;
     ThermodynamicTemperature::new::<degree_celsius>((ambient + rise.max(0.0)).min(HOTTEST))
 }

@@ -52,6 +52,9 @@ pub struct Run {
     pub drop_before: ElectricPotential,
     /// What the far end draws.
     pub demand: Demand,
+    /// Current in the hour of the lowest voltage, where it is less than the demand (resistive loads draw most at the
+    /// highest voltage): the drop counts with it.
+    pub low_current: Option<ElectricCurrent>,
     /// Length of the positive conductor.
     pub positive_length: Length,
     /// Length of the negative conductor.
@@ -84,6 +87,8 @@ pub struct Run {
     pub resistance_before: ElectricalResistance,
     /// Greatest prospective current at the device; `None` where the source's is not known (R6).
     pub greatest_fault: Option<ElectricCurrent>,
+    /// Where the greatest is not known: the part of it that is, a lower bound.
+    pub fault_floor: Option<ElectricCurrent>,
     /// The source behind the run's beginning at its weakest; `None` where not known.
     pub weakest_source: Option<Source>,
 }
@@ -117,6 +122,7 @@ impl Run {
             beginning: nominal,
             drop_before: ElectricPotential::new::<volt>(0.0),
             demand,
+            low_current: None,
             positive_length: one_way,
             negative_length: one_way,
             return_resistance: None,
@@ -133,6 +139,7 @@ impl Run {
             start: None,
             resistance_before: ElectricalResistance::new::<ohm>(0.0),
             greatest_fault: None,
+            fault_floor: None,
             weakest_source: None,
         }
     }

@@ -2,7 +2,7 @@
 
 use arrayvec::ArrayVec;
 
-use super::checked::{Checked, Outcome};
+use super::checked::Checked;
 use super::judge::{Judgement, judge};
 use super::run::Run;
 use crate::cable::Conductor;
@@ -183,12 +183,12 @@ fn try_conductor(
         Err(error) => return Err(error),
     };
     if offers.is_empty() {
-        return Ok(match bare.first_failure() {
+        return Ok(match bare.first_obstacle() {
             Some(failed) => Err((Some(*failed), None)),
             None => Ok((None, bare)),
         });
     }
-    let mut reason: Reason = (bare.first_failure().copied(), None);
+    let mut reason: Reason = (bare.first_obstacle().copied(), None);
     for offer in offers {
         let need = device_need(run, &bare, offer.family, offer.full_rated);
         let guard = match choose(offer, |_| need) {
@@ -201,7 +201,7 @@ fn try_conductor(
             }
         };
         let judged = judge(run, conductor, conductor, Some(&guard))?;
-        match judged.checks.iter().find(|c| c.outcome == Outcome::Failed) {
+        match judged.first_obstacle() {
             None => return Ok(Ok((Some(guard), judged))),
             Some(failed) => {
                 if reason.0.is_none() {

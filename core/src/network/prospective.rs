@@ -45,6 +45,19 @@ pub struct FaultState {
 }
 
 impl FaultState {
+    /// The most that a device at the run's beginning must interrupt: a fault on the run fed from the parent's side, or
+    /// one on the parent's side fed through the run.
+    pub fn duty_at_beginning(&self) -> ElectricCurrent {
+        let through = ElectricCurrent::new::<ampere>(self.below_at_parent.0);
+        if self.at_beginning >= through { self.at_beginning } else { through }
+    }
+
+    /// The most that a device at the run's end must interrupt: a fault on the run fed from the node's side, or one
+    /// beyond it fed through the run.
+    pub fn duty_at_end(&self) -> ElectricCurrent {
+        if self.from_below >= self.from_above { self.from_below } else { self.from_above }
+    }
+
     /// All sources on the parent's side, as one source seen at the run's beginning.
     pub fn source_at_beginning(&self) -> Option<Source> {
         thevenin(self.above_at_parent)

@@ -136,8 +136,9 @@ pub(super) static SET: RuleSet = RuleSet {
         citation: overcurrent("433.1", Seen::Page),
     },
     overload_ratio: Limit { value: 1.45, citation: overcurrent("433.1", Seen::Page) },
-    // With the conditions of the clause: risk of short-circuit reduced to a minimum, nothing combustible near.
-    unfused: UnfusedRule { plain: UNFUSED, sheathed: UNFUSED, sheathed_from_post: UNFUSED },
+    // With the conditions of the clause: risk of short-circuit reduced to a minimum, nothing combustible near. A sheath
+    // or enclosure throughout is taken for the first; without one the check is not made.
+    unfused: UnfusedRule { plain: None, sheathed: UNFUSED, sheathed_from_post: UNFUSED },
     drop: DropRule {
         critical: Limit {
             value: 0.03,

@@ -3,6 +3,7 @@
 use super::answer::Rules;
 use super::query::{Installation, Key};
 use crate::cable::{Compound, Insulation};
+use crate::citation::{Citation, Seen};
 use crate::device::Family;
 
 impl Rules {
@@ -32,6 +33,16 @@ impl Rules {
             Key::Us => &[Family::ClassT],
             Key::Iec => &[Family::Gg],
             Key::CraftIso | Key::CraftUs => &[Family::Blade, Family::ClassT],
+        }
+    }
+
+    /// The rule by which a family may not be the only device of a circuit; `None` where it may.
+    pub fn refuses_family(&self, family: Family) -> Option<Citation> {
+        match (self.set().key, family) {
+            (Key::Us, Family::Supplementary) => {
+                Some(Citation::new("NFPA 70-2023", "240.10, supplementary protection", Seen::Recalled))
+            }
+            _ => None,
         }
     }
 

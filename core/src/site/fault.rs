@@ -11,7 +11,31 @@ use super::graph::{Item, Tree};
 use super::model::{Return, Site};
 use crate::cable::{Conductor, least_linear_resistance};
 use crate::network::{FaultNode, FaultState, Source, prospective};
-use crate::quantity::{ElectricalResistance, Length};
+use crate::quantity::{ElectricCurrent, ElectricalResistance, Length};
+
+/// Greatest prospective current at a device, as far as it is known.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) enum Fault {
+    /// Every bank's is known.
+    Known(ElectricCurrent),
+    /// At least so much: that of a further bank is not known.
+    AtLeast(ElectricCurrent),
+}
+
+impl Fault {
+    fn of(amps: ElectricCurrent, complete: bool) -> Option<Self> {
+        if complete { Some(Self::Known(amps)) } else { (amps.value > 0.0).then_some(Self::AtLeast(amps)) }
+    }
+
+    /// The current where it is known, and the part of it that is where it is not.
+    pub fn parts(fault: Option<Self>) -> (Option<ElectricCurrent>, Option<ElectricCurrent>) {
+        match fault {
+            Some(Self::Known(amps)) => (Some(amps), None),
+            Some(Self::AtLeast(amps)) => (None, Some(amps)),
+            None => (None, None),
+        }
+    }
+}
 
 impl Flows {
     pub fn take_faults(&mut self, site: &Site, tree: &Tree, banks: &[Ends], wired: &[Wired]) {
@@ -26,10 +50,6 @@ impl Flows {
                    only: Option<Item>,
                    ohms: &dyn Fn(usize) -> f64|
          -> Option<Vec<FaultState>> {
-            // One bank of unknown current makes every sum unknown.
-            if unknown(pick) {
-                return None;
-            }
             let nodes: Vec<FaultNode> = tree
                 .nodes
                 .iter()
@@ -42,19 +62,21 @@ impl Flows {
             let mut states = vec![FaultState::default(); nodes.len()];
             prospective(&nodes, &mut states).ok().map(|()| states)
         };
+        // One bank of unknown current makes every greatest sum a lower bound, and the least unknown.
+        let complete = !unknown(|e| e.strongest);
         let strongest = run(|e| e.strongest, None, &|c| cold_ohms(site, wired, c));
         // The least current flows with one bank alone, the others disconnected.
         let weakest: Vec<Vec<FaultState>> = tree
             .nodes
             .iter()
-            .filter(|n| matches!(n.item, Item::Bank(_)))
+            .filter(|n| matches!(n.item, Item::Bank(_)) && !unknown(|e| e.weakest))
             .filter_map(|n| run(|e| e.weakest, Some(n.item), &|c| loop_ohms(site, wired, c, None)))
             .collect();
         for (index, node) in tree.nodes.iter().enumerate() {
             let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
             if let Some(state) = strongest.as_ref().and_then(|s| s.get(index)) {
-                flow.fault_at_beginning = Some(state.at_beginning);
-                flow.fault_at_end = Some(state.from_below);
+                flow.fault_at_beginning = Fault::of(state.duty_at_beginning(), complete);
+                flow.fault_at_end = Fault::of(state.duty_at_end(), complete);
             }
             let weaker = |one: Option<Source>, other: Option<Source>| match (one, other) {
                 (Some(a), Some(b)) => Some(if a.emf / a.resistance <= b.emf / b.resistance { a } else { b }),

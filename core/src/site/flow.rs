@@ -11,6 +11,7 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
+use super::fault::Fault;
 use super::graph::{Graph, Item, Tree, path_to};
 use super::model::{BankEntry, LoadKind, Return, Site};
 use super::plan::sources;
@@ -27,6 +28,10 @@ use crate::rules::LoadUse;
 pub(super) struct Flow {
     /// Design current, A.
     pub current: f64,
+    /// Current in the state of the lowest voltage, where resistive loads make it less than `current`, A.
+    pub low_current: Option<f64>,
+    /// The largest current of a single load behind the circuit, A.
+    pub single: f64,
     /// Part of it that flows for three hours or more.
     pub continuous_share: f64,
     /// Voltage at the circuit's end on the source's side in the worst hour, V.
@@ -45,8 +50,8 @@ pub(super) struct Flow {
     pub least_voltage: Option<f64>,
     pub load_terminal: Option<ThermodynamicTemperature>,
     /// Greatest prospective current just behind the beginning, and from the far side at the end.
-    pub fault_at_beginning: Option<ElectricCurrent>,
-    pub fault_at_end: Option<ElectricCurrent>,
+    pub fault_at_beginning: Option<Fault>,
+    pub fault_at_end: Option<Fault>,
     /// Weakest sources at both ends.
     pub weakest_at_beginning: Option<Source>,
     pub weakest_at_end: Option<Source>,
@@ -103,7 +108,16 @@ impl Flows {
         };
         for tree in trees {
             let Some(bank) = root_bank(site, tree) else { continue };
-            flows.describe(site, tree, bank.nominal.get::<volt>(), bank.highest.get::<volt>(), &ohms);
+            // Any bank of the tree can raise all of it to its own highest voltage.
+            let highest = tree
+                .nodes
+                .iter()
+                .filter_map(|n| match n.item {
+                    Item::Bank(i) => site.banks.get(i).map(|b| b.highest.get::<volt>()),
+                    _ => None,
+                })
+                .fold(0.0, f64::max);
+            flows.describe(site, tree, bank.nominal.get::<volt>(), highest, &ohms);
             flows.take_faults(site, tree, &banks, wired);
         }
         let links = graph.drawn_by_links();
@@ -137,11 +151,19 @@ impl Flows {
             }
         }
         flows.take_links(site, graph, trees, &volts);
+        for flow in flows.circuits.iter_mut().filter(|f| !f.beginning.is_finite()) {
+            flow.beginning = flow.nominal;
+        }
         // Stated currents and the user's own diversity.
         for (flow, circuit) in flows.circuits.iter_mut().zip(&site.circuits) {
-            flow.current *= circuit.diversity;
+            // The user's own diversity cannot undo the largest single load.
+            let single = flow.single;
+            let shared = |amps: f64| (amps * circuit.diversity).max(single.min(amps));
+            flow.low_current = flow.low_current.map(shared);
+            flow.current = shared(flow.current);
             if let Some(stated) = circuit.current.map(|a| a.get::<ampere>()) {
                 flow.current = flow.current.max(stated);
+                flow.low_current = flow.low_current.map(|low| low.max(stated));
             }
         }
         flows
@@ -231,6 +253,7 @@ impl Flows {
         emf: f64,
     ) {
         let long = continuous_currents(site, links, tree, states);
+        let single = single_currents(site, tree, states);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate() {
             let Some(circuit) = node.circuit else { continue };
@@ -251,6 +274,7 @@ impl Flows {
                 *slot = tree.nodes.get(node.parent).and_then(|p| p.circuit);
             }
             flow.current = amps;
+            flow.single = single.get(index).copied().unwrap_or(0.0);
             flow.continuous_share = match long.get(index) {
                 Some(long) if amps > 0.0 => (long / amps).clamp(0.0, 1.0),
                 _ => 1.0,
@@ -263,11 +287,16 @@ impl Flows {
         }
     }
 
-    /// Resistive loads draw most at the highest voltage: that current counts, against the drop of the worst hour.
+    /// Resistive loads draw most at the highest voltage: conductor and device are judged for that current, the drop for
+    /// the one of the worst hour.
     fn take_highest(&mut self, tree: &Tree, states: &[NodeState]) {
         for (node, state) in tree.nodes.iter().zip(states) {
             if let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) {
-                flow.current = flow.current.max(libm::fabs(state.current.get::<ampere>()));
+                let amps = libm::fabs(state.current.get::<ampere>());
+                if amps > flow.current {
+                    flow.low_current.get_or_insert(flow.current);
+                    flow.current = amps;
+                }
             }
         }
     }
@@ -276,8 +305,10 @@ impl Flows {
 const fn none() -> Flow {
     Flow {
         current: 0.0,
+        low_current: None,
+        single: 0.0,
         continuous_share: 1.0,
-        beginning: 0.0,
+        beginning: f64::INFINITY,
         drop_before: 0.0,
         ohms: 0.0,
         nominal: 0.0,
@@ -311,6 +342,30 @@ fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
         }
         Item::Bank(_) | Item::Board(_) => None,
     }
+}
+
+/// Current of the largest single load at each node or behind it, A.
+fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
+    let mut largest: Vec<f64> = tree
+        .nodes
+        .iter()
+        .zip(states)
+        .map(|(node, state)| match node.item {
+            Item::Load(i) => {
+                let count = site.loads.get(i).map_or(1, |l| l.count.max(1));
+                state.current.get::<ampere>() / f64::from(count)
+            }
+            Item::Inverter(_) => state.current.get::<ampere>(),
+            Item::Bank(_) | Item::Board(_) => 0.0,
+        })
+        .collect();
+    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
+        let own = largest.get(index).copied().unwrap_or(0.0);
+        if let Some(parent) = largest.get_mut(node.parent) {
+            *parent = parent.max(own);
+        }
+    }
+    largest
 }
 
 /// Currents of loads of three hours or more, summed up to each node, A.

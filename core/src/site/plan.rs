@@ -15,6 +15,7 @@ use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::bank;
+use super::fault::Fault;
 use super::flow::{Flow, Flows};
 use super::graph::{Graph, Item, Tree};
 use super::model::{CircuitEntry, Return, Site};
@@ -77,6 +78,8 @@ pub(super) struct Planned {
     pub judgement: Judgement,
     /// Judgement of each further device; same order as `fitted`, its first left out.
     pub further: Vec<Judgement>,
+    /// Its `to` lies on the source's side.
+    pub reversed: bool,
     /// Circuit whose device guards this one from further up, where it has none of its own.
     pub guarded_by: Option<usize>,
     pub flow: Flow,
@@ -347,8 +350,9 @@ fn judge_one(
         let mut seen = run;
         let parent_side = (end == End::From) != reversed;
         if !parent_side {
-            seen.greatest_fault = flow.fault_at_end;
-            seen.weakest_source = flow.weakest_at_end;
+            (seen.greatest_fault, seen.fault_floor) = Fault::parts(flow.fault_at_end);
+            // Nothing feeds from there: the least fault is the one beyond it, through this run.
+            seen.weakest_source = flow.weakest_at_end.or(flow.weakest_at_beginning);
         }
         seen
     };
@@ -392,6 +396,7 @@ fn judge_one(
         run,
         judgement,
         further,
+        reversed,
         guarded_by,
         flow,
     })
@@ -428,7 +433,9 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
         least_voltage: flow.least_voltage.map(ElectricPotential::new::<volt>),
         start: flow.start.map(ElectricCurrent::new::<ampere>),
         resistance_before: ElectricalResistance::new::<ohm>(flow.ohms_before),
-        greatest_fault: flow.fault_at_beginning,
+        greatest_fault: Fault::parts(flow.fault_at_beginning).0,
+        fault_floor: Fault::parts(flow.fault_at_beginning).1,
+        low_current: flow.low_current.map(ElectricCurrent::new::<ampere>),
         weakest_source: flow.weakest_at_beginning,
     }
 }

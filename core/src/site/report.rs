@@ -8,6 +8,7 @@ use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
+use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
 use super::graph::Item;
 use super::model::{CircuitEntry, Site};
@@ -202,14 +203,19 @@ fn line_of(site: &Site, circuit: &CircuitEntry, planned: &Planned) -> CircuitLin
 }
 
 fn device_line(circuit: &CircuitEntry, planned: &Planned, fitted: &Fitted) -> DeviceLine {
-    let first = planned.fitted.first().is_some_and(|f| f.end == fitted.end);
+    let parent_side = (fitted.end == End::From) != planned.reversed;
     DeviceLine {
         name: fitted.name.clone(),
         guard: fitted.guard,
         end: fitted.end,
         at: if fitted.end == End::From { circuit.from.clone() } else { circuit.to.clone() },
         designed: fitted.designed,
-        greatest_fault: if first { planned.flow.fault_at_beginning } else { planned.flow.fault_at_end },
+        greatest_fault: Fault::parts(if parent_side {
+            planned.flow.fault_at_beginning
+        } else {
+            planned.flow.fault_at_end
+        })
+        .0,
     }
 }
 
