@@ -147,6 +147,39 @@ pub const fn resistance_rise(chemistry: Chemistry) -> ResistanceRise {
     }
 }
 
+/// Voltages per cell that a bank's stated limits are held against.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct CellVoltages {
+    /// Charging reaches at least this, V a cell.
+    pub charge_V: f64,
+    /// Below this a cell is harmed by discharge, V a cell.
+    pub empty_V: f64,
+    /// Source.
+    pub citation: Citation,
+}
+
+/// Least charge voltage and least discharge voltage of a cell: bounds for plausibility, not set points.
+///
+/// Lead-acid charge: the lower edges of `lead-acid-charge-voltages` in `tests/reference/battery.toml` (page seen, gel and
+/// AGM); the rest recalled.
+///
+/// ```
+/// # use ampwright::battery::{Chemistry, cell_voltages};
+/// assert_eq!(cell_voltages(Chemistry::Flooded).charge_V, 2.4);
+/// ```
+pub const fn cell_voltages(chemistry: Chemistry) -> CellVoltages {
+    let citation = Citation::new("usual handbook values", "voltage per cell", Seen::Recalled);
+    let (charge_V, empty_V) = match chemistry {
+        Chemistry::Flooded => (2.4, 1.6),
+        Chemistry::Agm => (2.38, 1.6),
+        Chemistry::Gel => (2.35, 1.6),
+        Chemistry::Lfp => (3.4, 2.5),
+        Chemistry::Nmc => (4.0, 2.7),
+        Chemistry::NickelCadmium => (1.45, 0.9),
+    };
+    CellVoltages { charge_V, empty_V, citation }
+}
+
 /// Voltage behind the resistance of a bank in a fault, per cell: at most and at least.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct FaultVoltage {

@@ -12,8 +12,9 @@ pub use charge::{
 };
 pub use chemistry::Chemistry;
 pub use fault::{
-    FaultVoltage, LEAD_ACID_SHORT_CIRCUIT, ResistanceRise, ShortCircuitEstimate, bank_resistance,
-    fault_voltage, greatest_bank_resistance, resistance_rise, short_circuit_estimate,
+    CellVoltages, FaultVoltage, LEAD_ACID_SHORT_CIRCUIT, ResistanceRise, ShortCircuitEstimate,
+    bank_resistance, cell_voltages, fault_voltage, greatest_bank_resistance, resistance_rise,
+    short_circuit_estimate,
 };
 
 /// Every calculation of this room, by file.

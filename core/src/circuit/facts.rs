@@ -26,8 +26,6 @@ const ADIABATIC_IEC: Citation = Citation::new("IEC 60364-4-43:2008", "434.5.2, T
 /// The same law for the sets that print no k: heat of the fault kept in the metal.
 const ADIABATIC_LAW: Citation =
     Citation::new("adiabatic law", "k of the metal between rating and short-circuit limit", Seen::Derived);
-/// The least fault opens no device, but the conductor carries it.
-const BORNE: &str = "least prospective current opens no device, but the conductor bears it for ever: it";
 /// Longest opening time of an instantaneous trip, s.
 const INSTANTANEOUS_S: f64 = 0.1;
 const INSTANTANEOUS: Citation =
@@ -381,20 +379,6 @@ impl Facts<'_> {
                 own("R6"),
             ));
         };
-        // Too little to open the device, and too little to hurt the conductor: it bears it for ever.
-        if let Ok(ampacity) = self.ampacity
-            && least <= ampacity.corrected
-            && least < times * device.rating
-        {
-            return Some(Checked::at_most(
-                Check::LeastFault,
-                least.get::<ampere>(),
-                ampacity.corrected.get::<ampere>(),
-                "A",
-                BORNE,
-                own("R6"),
-            ));
-        }
         Some(Checked::at_least(
             Check::LeastFault,
             least.get::<ampere>(),

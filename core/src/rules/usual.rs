@@ -36,6 +36,11 @@ impl Rules {
         }
     }
 
+    /// Whether conductors of engine starting need no device (R7): under craft rules.
+    pub fn exempts_cranking(&self) -> bool {
+        matches!(self.set().key, Key::CraftIso | Key::CraftUs)
+    }
+
     /// The rule by which a family may not be the only device of a circuit; `None` where it may.
     pub fn refuses_family(&self, family: Family) -> Option<Citation> {
         match (self.set().key, family) {

@@ -5,6 +5,7 @@ mod fault;
 mod finding;
 mod flow;
 mod graph;
+mod grow;
 mod model;
 mod offers;
 mod plan;

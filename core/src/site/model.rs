@@ -225,6 +225,13 @@ pub struct CircuitEntry {
     pub no_device: bool,
 }
 
+impl CircuitEntry {
+    /// Whether it feeds an engine's starter: `cranking`, and a load at its end that runs for less than three hours.
+    pub(super) fn starts_engine(&self, load: Option<&LoadEntry>) -> bool {
+        self.cranking && load.is_some_and(|l| !l.continuous)
+    }
+}
+
 /// `[[circuit.device]]`.
 #[derive(Clone, Debug)]
 #[allow(non_snake_case)] // units keep their case: A2s

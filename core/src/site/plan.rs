@@ -18,13 +18,14 @@ use super::bank;
 use super::fault::Fault;
 use super::flow::{Flow, Flows};
 use super::graph::{Graph, Item, Tree};
-use super::model::{CircuitEntry, Return, Site};
+use super::grow::{add_far_devices, enlarge, relieve_collapse, restart_leaves};
+use super::model::{CircuitEntry, LoadEntry, Return, Site};
 use super::offers::{Offers, complete, joints};
-use super::reach::Reach;
 use super::read::{Problem, Problems};
 use super::smaller::{Neighbours, explain};
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
+use crate::device::Supply;
 use crate::error::Error;
 use crate::protection::{End, Feeds, Guard, feeds};
 use crate::quantity::{ConductorSize, ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
@@ -41,6 +42,8 @@ pub(super) struct Fitted {
     pub entry: Option<usize>,
     /// Family or rating were chosen here.
     pub designed: bool,
+    /// A plain part, not on any shelf: voltage and breaking capacity are what must be bought, not what is known.
+    pub specified: bool,
 }
 
 /// A smaller size and the check that refused it.
@@ -136,6 +139,8 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
     let (mut shared_found, mut trimmed, mut settled) = (false, false, false);
     // Far ends of designed circuits that no device further away guards well enough.
     let mut far_devices = vec![false; site.circuits.len()];
+    // What the whole plan said to the next smaller size, where the circuit alone had nothing against it.
+    let mut tried_out: Vec<Option<Reason>> = vec![None; site.circuits.len()];
     for _ in 0..=most {
         let pass = |drafts: &[Draft], temperatures: &[Option<f64>], far_devices: &[bool]| {
             let conductors: Vec<(Conductor, Conductor, ElectricalResistance)> =
@@ -184,11 +189,14 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
                     settled = false;
                 } else if let Some(draft) = drafts.get_mut(circuit) {
                     *draft = kept;
+                    if let Some(slot) = tried_out.get_mut(circuit) {
+                        *slot = first_obstacle(&judged, circuit);
+                    }
                 }
             }
         } else {
             let mut circuits = planned;
-            explain(site, &offers, &drafts, &flows, &mut circuits);
+            explain(site, &offers, (&drafts, &tried_out), &flows, &mut circuits);
             return Ok(Plan { trees, circuits, collapsed: flows.collapsed });
         }
     }
@@ -202,35 +210,9 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
     ))
 }
 
-/// Where the network collapses: enlarges the designed run of the greatest resistance on the path; `false` where nothing
-/// collapsed, or nothing on the path can grow.
-fn relieve_collapse(flows: &Flows, drafts: &mut [Draft]) -> bool {
-    let Some((path, _)) = &flows.collapse else { return false };
-    let mut worst: Option<(usize, f64)> = None;
-    for &circuit in path {
-        let ohms = flows.circuits.get(circuit).map_or(0.0, |f| f.ohms);
-        if can_grow(drafts, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
-            worst = Some((circuit, ohms));
-        }
-    }
-    worst.is_some_and(|(circuit, _)| grow(circuit, drafts))
-}
-
-/// Puts designed circuits that feed no board or bank back to the smallest size on offer.
-fn restart_leaves(trees: &[Tree], drafts: &mut [Draft]) {
-    for node in trees.iter().flat_map(|t| &t.nodes) {
-        if matches!(node.item, Item::Load(_) | Item::Inverter(_))
-            && let Some(draft) = node.circuit.and_then(|c| drafts.get_mut(c))
-            && draft.offered.is_some()
-        {
-            draft.take(0);
-        }
-    }
-}
-
 impl Draft {
     /// Takes a size on offer; `false` where there is none.
-    fn take(&mut self, place: usize) -> bool {
+    pub fn take(&mut self, place: usize) -> bool {
         let Some(conductor) = self.sizes.get(place) else { return false };
         self.offered = Some(place);
         self.positive = *conductor;
@@ -246,14 +228,13 @@ impl Draft {
     }
 }
 
-/// Whether a circuit is designed and a larger size is on offer.
-fn can_grow(drafts: &[Draft], circuit: usize) -> bool {
-    drafts.get(circuit).is_some_and(|d| d.offered.is_some_and(|o| o + 1 < d.sizes.len()))
-}
-
-/// Takes the next size on offer; `false` where there is none.
-fn grow(circuit: usize, drafts: &mut [Draft]) -> bool {
-    drafts.get_mut(circuit).is_some_and(|d| d.offered.is_some_and(|o| d.take(o + 1)))
+/// The first check that speaks against a plan, a given circuit's own before those of others.
+fn first_obstacle(planned: &[Option<Planned>], circuit: usize) -> Option<Reason> {
+    let of = |p: &Planned| p.judgement.checks.iter().find(|c| c.is_obstacle()).copied();
+    if let Some(check) = planned.get(circuit)?.as_ref().and_then(of) {
+        return Some(Reason::Check(check));
+    }
+    planned.iter().enumerate().find_map(|(other, p)| Some(Reason::Path(of(p.as_ref()?)?, other)))
 }
 
 /// Failed checks of a plan.
@@ -303,13 +284,17 @@ fn judge_all(
                 let planned = planned.get(above)?.as_ref()?;
                 if planned.fitted.is_empty() { planned.guarded_by } else { Some(above) }
             });
+            let child = match node.item {
+                Item::Load(i) => site.loads.get(i),
+                _ => None,
+            };
             // A bank at the far end feeds at once; a board may be guarded by the devices of what feeds it.
             let far = matches!(node.item, Item::Bank(_)) || far_devices.get(index).copied().unwrap_or(false);
             let done = judge_one(
                 site,
                 offers,
                 &planned,
-                &Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream, far },
+                &Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream, far, child },
             )
             .map_err(|error| Problem {
                 line: circuit.line,
@@ -334,6 +319,8 @@ struct Task<'a> {
     upstream: Option<usize>,
     /// A designed circuit gets a device at its far end too.
     far: bool,
+    /// The load at its far end, if it is one.
+    child: Option<&'a LoadEntry>,
 }
 
 fn judge_one(
@@ -342,7 +329,7 @@ fn judge_one(
     planned: &[Option<Planned>],
     task: &Task<'_>,
 ) -> Result<Planned, Error> {
-    let &Task { index, circuit, draft, ends, flow, reversed, upstream, far } = task;
+    let &Task { index, circuit, draft, ends, flow, reversed, upstream, far, child } = task;
     let run = run_of(site, circuit, draft, &flow);
     let bare = judge(&run, &draft.positive, &draft.negative, None)?;
     // The device at the end that the source feeds comes first; further ones see their own fault currents.
@@ -386,6 +373,16 @@ fn judge_one(
         .skip(1)
         .map(|f| judge(&at(f.end), &draft.positive, &draft.negative, Some(&f.guard)))
         .collect::<Result<Vec<_>, _>>()?;
+    let mut judgement = judgement;
+    if circuit.starts_engine(child) && site.rules.exempts_cranking() {
+        // Engine starting lasts seconds; the tables are for continuous current.
+        for checked in &mut judgement.checks {
+            if matches!(checked.check, Check::Ampacity | Check::TerminalColumn) {
+                checked.outcome = Outcome::NotChecked;
+                checked.what = "seconds of engine starting against a table for continuous current";
+            }
+        }
+    }
     Ok(Planned {
         positive: draft.positive,
         negative: draft.negative,
@@ -474,7 +471,14 @@ fn fit(
             {
                 let kind = if guard.device.family.data().is_fuse { "fuse" } else { "breaker" };
                 let name = format!("{kind} {}{}", index + 1, if place == 0 { "" } else { "b" });
-                fitted.push(Fitted { name, guard, end, entry: None, designed: true });
+                fitted.push(Fitted {
+                    name,
+                    guard,
+                    end,
+                    entry: None,
+                    designed: true,
+                    specified: offers.specifies(),
+                });
             }
         }
         return fitted;
@@ -492,6 +496,9 @@ fn fit(
                 end: stated.end,
                 entry: Some(entry),
                 designed: complete.is_none(),
+                specified: complete.is_none()
+                    && offers.specifies()
+                    && (stated.supply == Supply::NotStated || stated.breaking.is_none()),
             });
         }
     }
@@ -499,131 +506,6 @@ fn fit(
     let first = if reversed { End::To } else { End::From };
     fitted.sort_by_key(|f| f.end != first);
     fitted
-}
-
-/// Enlarges what fails; `true` where something grew.
-fn enlarge(
-    site: &Site,
-    drafts: &mut [Draft],
-    planned: &[Option<Planned>],
-    flows: &Flows,
-) -> Result<bool, Problems> {
-    let mut grew = false;
-    let mut problems = Vec::new();
-    // Volts won by the next size for the metal it takes: ρ·I·l·(1/A − 1/A') over (A' − A)·l. Growing the best of these
-    // first spreads the metal over a path as evenly as the sizes allow (A goes with √I).
-    let worth = |drafts: &[Draft], circuit: usize| {
-        let amps = planned
-            .get(circuit)
-            .and_then(|p| p.as_ref())
-            .map_or(0.0, |p| p.judgement.current.get::<ampere>());
-        let areas = drafts.get(circuit).and_then(|d| {
-            let next = d.sizes.get(d.offered? + 1)?;
-            Some(d.positive.size.area_mm2() * next.size.area_mm2())
-        });
-        areas.map_or(0.0, |product| amps / product)
-    };
-    for (circuit, planned) in planned.iter().enumerate() {
-        let Some(p) = planned else { continue };
-        let failed = |path: bool| {
-            p.judgement
-                .checks
-                .iter()
-                .chain(p.further.iter().flat_map(|j| j.checks.iter()))
-                .find(|c| c.outcome == Outcome::Failed && path == is_of_path(c.check))
-                .copied()
-        };
-        // What a larger conductor of this circuit mends.
-        if let Some(check) = failed(false).filter(|c| mended_by_size(c.check))
-            && p.designed()
-        {
-            if grow(circuit, drafts) {
-                grew = true;
-            } else {
-                problems.push(cannot_serve(site, circuit, &check));
-            }
-            continue;
-        }
-        // What a larger conductor anywhere on the path mends: the one grows that wins most for its metal.
-        let Some(check) = failed(true) else { continue };
-        let path = flows.path(circuit);
-        let mut worst: Option<(usize, f64)> = None;
-        for &c in path.iter().filter(|&&c| can_grow(drafts, c)) {
-            let gain = worth(drafts, c);
-            if worst.is_none_or(|(_, most)| gain > most) {
-                worst = Some((c, gain));
-            }
-        }
-        match worst {
-            Some((c, _)) if c == circuit => grew |= grow(c, drafts),
-            // A shared run grows once in a pass: the next pass sees what it won.
-            Some((c, _)) => return Ok(grow(c, drafts)),
-            None if p.designed() => problems.push(cannot_serve(site, circuit, &check)),
-            None => {}
-        }
-    }
-    if problems.is_empty() { Ok(grew) } else { Err(Problems(problems, 0)) }
-}
-
-/// Notes the far ends of designed circuits that need a device of their own; `true` where one was added.
-fn add_far_devices(
-    site: &Site,
-    trees: &[Tree],
-    planned: &[Option<Planned>],
-    far_devices: &mut [bool],
-) -> bool {
-    let reach = Reach::new(site, trees, planned);
-    let mut added = false;
-    for (((circuit, planned), needed), &passed) in
-        site.circuits.iter().zip(planned).zip(far_devices.iter_mut()).zip(&reach.far)
-    {
-        let Some(p) = planned else { continue };
-        if *needed || !p.feeds.to || !p.feeds.from || circuit.no_device || !circuit.devices.is_empty() {
-            continue;
-        }
-        let limit = p
-            .judgement
-            .ampacity
-            .as_ref()
-            .map_or(0.0, |a| site.rules.device_limit(p.positive.size, a.corrected).most.get::<ampere>());
-        if passed > limit {
-            *needed = true;
-            added = true;
-        }
-    }
-    added
-}
-
-/// Whether a larger conductor anywhere on the path mends a failed check.
-const fn is_of_path(check: Check) -> bool {
-    matches!(check, Check::Drop | Check::LoadVoltage | Check::StartVoltage)
-}
-
-/// Whether a larger conductor mends a failed check.
-const fn mended_by_size(check: Check) -> bool {
-    matches!(
-        check,
-        Check::LeastSize
-            | Check::TerminalColumn
-            | Check::Ampacity
-            | Check::DeviceProtects
-            | Check::OpensLate
-            | Check::LeastFault
-            | Check::Withstand
-            | Check::Termination
-    )
-}
-
-fn cannot_serve(site: &Site, circuit: usize, check: &Checked) -> Problem {
-    let (line, name) = site.circuits.get(circuit).map_or((0, ""), |c| (c.line, c.name.as_str()));
-    Problem {
-        line,
-        place: format!("[[circuit]] \"{name}\""),
-        text: format!(
-            "no conductor on offer passes every check; the largest fails: {check}; add larger [[stock.cable]], \
-             shorten the run, split the load or raise the voltage"
-        ),
-    }
 }
 
 /// The banks' sources, for the flows.

@@ -8,14 +8,17 @@ use uom::si::electric_potential::volt;
 
 use super::finding::{Severity, digits};
 use super::graph::Item;
-use super::model::Site;
+use super::model::{BankEntry, Site};
 use super::plan::{Plan, sources};
 use super::wiring::Findings;
+use crate::battery::cell_voltages;
 use crate::citation::{Citation, Seen};
 use crate::protection::Earthing;
 
 /// Highest voltage that may be touched without basic protection in dry places, V.
 const TOUCH_V: f64 = 60.0;
+/// Upper limit of extra-low voltage, DC, V.
+const EXTRA_LOW_V: f64 = 120.0;
 /// Most lugs on one stud (R8).
 const LUGS: u32 = 4;
 
@@ -146,6 +149,126 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
     }
 }
 
+/// Banks that are joined must be alike (R15).
+fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
+    for tree in &plan.trees {
+        let mut banks = tree.nodes.iter().filter_map(|n| match n.item {
+            Item::Bank(i) => site.banks.get(i),
+            _ => None,
+        });
+        let Some(first) = banks.next() else { continue };
+        for other in banks {
+            let place = format!("bank \"{}\"", other.name);
+            let pair =
+                |a: f64, b: f64| format!("{} V beside {} V of \"{}\"", digits(b), digits(a), first.name);
+            let (a, b) = (first.nominal.get::<volt>(), other.nominal.get::<volt>());
+            // LFP of 12.8 V stands for 12 V: the label alone is no danger, half a cell more is.
+            if libm::fabs(a - b) > 0.1 * a {
+                found.add(
+                    Severity::Danger,
+                    "R15",
+                    "banks-of-unlike-voltage",
+                    place,
+                    other.line,
+                    format!("joined by conductors: {}", pair(a, b)),
+                    None,
+                    "join them through a converter made for it, never by a cable",
+                );
+                continue;
+            }
+            if first.chemistry != other.chemistry {
+                found.add(
+                    Severity::Nonconforming,
+                    "R15",
+                    "banks-of-unlike-chemistry",
+                    place.clone(),
+                    other.line,
+                    format!(
+                        "{} beside {} of \"{}\": they neither share nor charge alike",
+                        other.chemistry, first.chemistry, first.name
+                    ),
+                    None,
+                    "join them through a converter or a selector, or use one chemistry",
+                );
+            }
+            let (a, b) = (first.highest.get::<volt>(), other.highest.get::<volt>());
+            if libm::fabs(a - b) > 0.02 * a {
+                found.add(
+                    Severity::Nonconforming,
+                    "R15",
+                    "banks-of-unlike-charge-voltage",
+                    place,
+                    other.line,
+                    format!("highest voltage {}", pair(a, b)),
+                    None,
+                    "charge them apart, or set both to the lower",
+                );
+            }
+        }
+    }
+}
+
+/// What a bank states against what its cells do (R11): every voltage check rests on it.
+fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
+    let cells = bank.nominal.get::<volt>() / bank.chemistry.nominal_cell().get::<volt>();
+    let limits = cell_voltages(bank.chemistry);
+    let (highest, cut_off) = (bank.highest.get::<volt>() / cells, bank.cut_off.get::<volt>() / cells);
+    if highest < limits.charge_V {
+        found.add(
+            Severity::Nonconforming,
+            "R11",
+            "highest-below-charge-voltage",
+            place,
+            bank.line,
+            format!(
+                "highest {} V is {} V a cell; charging takes {} V and more",
+                digits(bank.highest.get::<volt>()),
+                digits(highest),
+                digits(limits.charge_V)
+            ),
+            Some(limits.citation),
+            "state the highest voltage that charging reaches, cold",
+        );
+    }
+    if cut_off < limits.empty_V {
+        found.add(
+            Severity::Nonconforming,
+            "R14",
+            "cut-off-below-cell-limit",
+            place,
+            bank.line,
+            format!(
+                "cut-off {} V is {} V a cell; below {} V it is harmed",
+                digits(bank.cut_off.get::<volt>()),
+                digits(cut_off),
+                digits(limits.empty_V)
+            ),
+            Some(limits.citation),
+            "disconnect earlier",
+        );
+    }
+    if let (Some(amps), Some(ohms)) = (bank.short_circuit, bank.internal_resistance) {
+        let by_resistance = bank.highest.get::<volt>() / ohms.value;
+        let ratio = by_resistance / amps.get::<ampere>();
+        if !(0.5..=2.0).contains(&ratio) {
+            found.add(
+                Severity::Nonconforming,
+                "R6",
+                "fault-data-contradict",
+                place,
+                bank.line,
+                format!(
+                    "short_circuit {} A stands beside a resistance that gives {} A",
+                    digits(amps.get::<ampere>()),
+                    digits(crate::circuit::bound(by_resistance))
+                ),
+                None,
+                "state the one that the maker gives or that was measured",
+            );
+        }
+    }
+}
+
 /// Banks: discharge limit, touch voltage, what is known of the fault current.
 pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
     for (index, bank) in site.banks.iter().enumerate() {
@@ -157,6 +280,27 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
             .filter(|(c, _)| c.from == bank.name || c.to == bank.name)
             .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
             .sum();
+        plausible(bank, &place, found);
+        let lugs = site.circuits.iter().filter(|c| c.from == bank.name || c.to == bank.name).count();
+        if lugs > LUGS as usize {
+            found.add(
+                Severity::Nonconforming,
+                "R8",
+                "too-many-lugs",
+                place.clone(),
+                bank.line,
+                format!("{lugs} circuits on each terminal, at most {LUGS} lugs on one stud"),
+                None,
+                "lead one cable to a busbar and spread them there",
+            );
+        }
+        if bank.greatest_discharge.is_none() {
+            found.add(
+                Severity::NotChecked, "R11", "discharge-limit-not-stated", place.clone(), bank.line,
+                format!("check not made: {} A in the worst hour against what the bank may give; state greatest_discharge", digits(drawn)),
+                None, "",
+            );
+        }
         if let Some(limit) = bank.greatest_discharge.map(|a| a.get::<ampere>())
             && drawn > limit
         {
@@ -166,12 +310,23 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
                 "discharge-above-limit",
                 place.clone(),
                 bank.line,
-                format!("{} A in the worst hour, at most {} A", digits(drawn), digits(limit)),
+                format!(
+                    "{} A in the worst hour with this bank alone, at most {} A",
+                    digits(drawn),
+                    digits(limit)
+                ),
                 None,
                 "less load at a time, a larger bank or another pack",
             );
         }
         let highest = bank.highest.get::<volt>();
+        if highest > EXTRA_LOW_V {
+            found.add(
+                Severity::NotChecked, "R19", "above-extra-low-voltage", place.clone(), bank.line,
+                format!("check not made: at {} V DC fault protection by disconnection, insulation and clearances; above {} V it is no extra-low voltage", digits(highest), digits(EXTRA_LOW_V)),
+                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)), "",
+            );
+        }
         if highest > TOUCH_V {
             found.add(
                 Severity::NotChecked, "R19", "touch-protection", place.clone(), bank.line,
@@ -195,6 +350,7 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
             );
         }
     }
+    unlike_banks(site, plan, found);
     if site.earthing == Earthing::Floating {
         found.add(
             Severity::Advice,

@@ -18,8 +18,8 @@ use super::wiring::{findings, name_of, stud_of};
 use crate::cable::Conductor;
 use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
-use crate::protection::{End, Guard};
-use crate::quantity::{ConductorSize, ElectricCurrent};
+use crate::protection::{Earthing, End, Guard, Pole};
+use crate::quantity::{ConductorSize, ElectricCurrent, Length};
 use crate::rules::practice_figure;
 
 /// One device of a circuit.
@@ -35,6 +35,12 @@ pub struct DeviceLine {
     pub at: String,
     /// Whether family or rating were chosen here.
     pub designed: bool,
+    /// Voltage and breaking capacity are what must be bought, not what is known of a part.
+    pub specified: bool,
+    /// Pole it sits in.
+    pub pole: Pole,
+    /// Conductor between the source's end and the device, where stated.
+    pub from_source: Option<Length>,
     /// Greatest prospective current it must interrupt, where known.
     pub greatest_fault: Option<ElectricCurrent>,
 }
@@ -64,6 +70,8 @@ pub struct CircuitLine {
     pub refused: Vec<(ConductorSize, String)>,
     /// What decided the size, or uses most of its limit where it is stated.
     pub governing: String,
+    /// The line cannot carry its load: its figures are those of a constant current.
+    pub collapsed: bool,
     /// Name of the circuit whose device guards this one from further up.
     pub guarded_by: Option<String>,
     /// Remark on a figure of common practice for this conductor, where there is one.
@@ -141,7 +149,10 @@ pub fn inspect(site: &Site) -> Result<Report, Problems> {
         .circuits
         .iter()
         .zip(&plan.circuits)
-        .filter_map(|(circuit, planned)| planned.as_ref().map(|p| line_of(site, circuit, p)))
+        .enumerate()
+        .filter_map(|(index, (circuit, planned))| {
+            Some(line_of(site, &plan, index, circuit, planned.as_ref()?))
+        })
         .collect();
     Ok(Report {
         name: site.name.clone(),
@@ -157,7 +168,7 @@ pub fn inspect(site: &Site) -> Result<Report, Problems> {
     })
 }
 
-fn line_of(site: &Site, circuit: &CircuitEntry, planned: &Planned) -> CircuitLine {
+fn line_of(site: &Site, plan: &Plan, index: usize, circuit: &CircuitEntry, planned: &Planned) -> CircuitLine {
     let name = |index: usize| site.circuits.get(index).map_or_else(String::new, |c| c.name.clone());
     let reason = |reason: &Reason| match reason {
         Reason::Check(checked) => checked.to_string(),
@@ -185,9 +196,10 @@ fn line_of(site: &Site, circuit: &CircuitEntry, planned: &Planned) -> CircuitLin
         designed: planned.designed(),
         run: planned.run,
         judgement: planned.judgement.clone(),
-        devices: planned.fitted.iter().map(|f| device_line(circuit, planned, f)).collect(),
+        devices: planned.fitted.iter().map(|f| device_line(site, circuit, planned, f)).collect(),
         refused: planned.refused.iter().map(|r| (r.size, reason(&r.by))).collect(),
         governing,
+        collapsed: plan.collapsed.contains(&index),
         guarded_by: planned.guarded_by.map(name),
         practice: practice_figure(planned.positive.size, planned.positive.insulation.rating_degC()).map(|p| {
             let table = planned.judgement.ampacity.as_ref().map_or(f64::NAN, |a| a.base.value);
@@ -202,7 +214,8 @@ fn line_of(site: &Site, circuit: &CircuitEntry, planned: &Planned) -> CircuitLin
     }
 }
 
-fn device_line(circuit: &CircuitEntry, planned: &Planned, fitted: &Fitted) -> DeviceLine {
+fn device_line(site: &Site, circuit: &CircuitEntry, planned: &Planned, fitted: &Fitted) -> DeviceLine {
+    let entry = fitted.entry.and_then(|e| circuit.devices.get(e));
     let parent_side = (fitted.end == End::From) != planned.reversed;
     DeviceLine {
         name: fitted.name.clone(),
@@ -210,6 +223,14 @@ fn device_line(circuit: &CircuitEntry, planned: &Planned, fitted: &Fitted) -> De
         end: fitted.end,
         at: if fitted.end == End::From { circuit.from.clone() } else { circuit.to.clone() },
         designed: fitted.designed,
+        specified: fitted.specified,
+        pole: match (entry, site.earthing) {
+            (Some(entry), _) => entry.pole,
+            (None, Earthing::Negative) => Pole::Positive,
+            (None, Earthing::Positive) => Pole::Negative,
+            (None, Earthing::Floating) => Pole::Both,
+        },
+        from_source: entry.and_then(|e| e.from_source),
         greatest_fault: Fault::parts(if parent_side {
             planned.flow.fault_at_beginning
         } else {
@@ -279,8 +300,21 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
         }
         for fitted in planned.fitted.iter().filter(|f| f.designed) {
             let device = fitted.guard.device;
-            let price = site.stock.devices.iter().find(|d| d.family == device.family).and_then(|d| d.price);
-            add(1.0, "pcs", super::text::device_words(&fitted.guard), &circuit.name, price);
+            let price = site
+                .stock
+                .devices
+                .iter()
+                .find(|d| d.family == device.family && d.ratings.contains(&device.rating))
+                .and_then(|d| d.price);
+            // One in every unearthed pole (R7).
+            let pieces = f64::from(if site.earthing == Earthing::Floating { 2_u8 } else { 1 });
+            add(
+                pieces,
+                "pcs",
+                super::text::device_words(&fitted.guard, fitted.specified),
+                &circuit.name,
+                price,
+            );
         }
         if planned.designed() {
             for (name, lug) in [(&circuit.from, circuit.from_lug), (&circuit.to, circuit.to_lug)] {
@@ -330,6 +364,23 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
     if !lugs.is_empty() {
         lines.push(format!("four crimped lugs of 0.1 mΩ (generic, common practice): {lugs}"));
     }
+    lines.push(
+        "resistance of parts without their own (common practice, no source): volts at rated current over rated \
+         current: fuse with holder 100 mV, breaker pole 200 mV, switch or selector 50 mV, relay 80 mV, shunt 75 mV"
+            .to_string(),
+    );
+    lines.push(
+        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), metal of full area at the lowest ambient, \
+         no joints; least fault: one bank alone, empty (1.98 V a lead-acid cell), its resistance raised for \
+         discharge, cold and age (4.5 times lead-acid, 9 times lithium, 3.4 times nickel-cadmium; common practice), \
+         conductors at their rated temperature, joints in"
+            .to_string(),
+    );
+    lines.push(
+        "conductor temperature: ambient + (rating − ambient) × (current / capacity)²; flexible AWG conductors count \
+         with the greater of the stranded table value and 1.16 times the resistance of their area"
+            .to_string(),
+    );
     if let Some(usual) = site.rules.unmarked_terminal_degC() {
         let unmarked = names(&|c| c.terminal.is_none());
         if !unmarked.is_empty() {
@@ -350,8 +401,9 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
         ));
     }
     lines.push(
-        "worst hour: every load at once, bank at cut-off, constant-power loads solved at the volts that reach them; \
-         resistive loads at the highest voltage"
+        "worst hour: every load at once, the bank at cut-off, each of several banks alone, constant-power loads solved \
+         at the volts that reach them; resistive loads load conductors and devices with their current at the highest \
+         voltage"
             .to_string(),
     );
     lines
@@ -378,6 +430,20 @@ fn not_covered(site: &Site) -> Vec<String> {
     for inverter in &site.inverters {
         lines.push(format!("everything beyond the AC terminals of inverter \"{}\"", inverter.name));
     }
+    let open: Vec<&str> = site
+        .circuits
+        .iter()
+        .flat_map(|c| c.devices.iter())
+        .filter(|d| d.terminal_range.is_none())
+        .map(|d| d.name.as_str())
+        .collect();
+    if !open.is_empty() {
+        lines.push(format!(
+            "whether the terminals take the conductor (terminal_range not stated): {}",
+            open.join(", ")
+        ));
+    }
+    lines.push("loads and inverters that can feed back: every one is taken for a load only".to_string());
     lines.push(
         "size of bank and array, charging, ventilation, lightning and protective conductors: not part of this report"
             .to_string(),

@@ -13,7 +13,6 @@ use super::offers::Offers;
 use super::plan::{Draft, Planned, Reason, Refused};
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Outcome, Relation, judge};
-use crate::error::Error;
 use crate::quantity::ElectricPotential;
 use crate::rules::Check;
 
@@ -41,7 +40,6 @@ impl Neighbours<'_> {
         let stated = self.site.circuits.get(circuit)?;
         let bare = match judge(&planned.run, conductor, conductor, None) {
             Ok(bare) => bare,
-            Err(error @ Error::NoSolution { .. }) => return Some(Reason::Error(error)),
             Err(error) => return Some(Reason::Error(error)),
         };
         let guard = match planned.fitted.first() {
@@ -95,7 +93,7 @@ impl Neighbours<'_> {
 pub(super) fn explain(
     site: &Site,
     offers: &Offers,
-    drafts: &[Draft],
+    (drafts, tried_out): (&[Draft], &[Option<Reason>]),
     flows: &Flows,
     planned: &mut [Option<Planned>],
 ) {
@@ -108,7 +106,12 @@ pub(super) fn explain(
                 let smaller = draft.offered.and_then(|o| draft.sizes.get(..o)).unwrap_or_default();
                 smaller
                     .iter()
-                    .filter_map(|c| Some(Refused { size: c.size, by: own.against(drafts, circuit, c)? }))
+                    .filter_map(|c| {
+                        let by = own.against(drafts, circuit, c)?;
+                        let whole = tried_out.get(circuit).copied().flatten();
+                        let by = if matches!(by, Reason::Together) { whole.unwrap_or(by) } else { by };
+                        Some(Refused { size: c.size, by })
+                    })
                     .collect()
             })
             .collect()

@@ -17,8 +17,8 @@ use super::report::{CircuitLine, Report};
 use crate::cable::{Class, Coating, Conductor, Material};
 use crate::circuit::{Outcome, bound};
 use crate::device::{Polarity, Supply};
-use crate::protection::Guard;
-use crate::rules::{Installation, Key, Space};
+use crate::protection::{Guard, Pole};
+use crate::rules::{Check, Installation, Key, Space};
 
 /// Stands under every report (DESIGN 11).
 const CAUTIONS: [&str; 5] = [
@@ -186,9 +186,16 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
             f,
             "device",
             &format!(
-                "{}: {}, at \"{}\"; {fault}; {}",
+                "{}: {}, {}{} \"{}\"; {fault}; {}",
                 printable(&d.name),
-                device_words(&d.guard),
+                device_words(&d.guard, d.specified),
+                match d.pole {
+                    Pole::Positive => "positive pole, ",
+                    Pole::Negative => "negative pole, ",
+                    Pole::Both => "both poles, ",
+                },
+                d.from_source
+                    .map_or_else(|| "at".to_string(), |l| format!("{} m from", digits(l.get::<meter>()))),
                 printable(&d.at),
                 if d.designed { "designed" } else { "stated" }
             ),
@@ -233,7 +240,13 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         row(f, "not taken", &format!("{size}: {}", printable(why)))?;
     }
     for checked in &j.checks {
+        let bought = c.devices.first().is_some_and(|d| d.specified)
+            && matches!(checked.check, Check::DeviceSupply | Check::Breaking);
         let mark = match checked.outcome {
+            Outcome::Passed if bought => {
+                row(f, "to be bought", &format!("{}: {}", checked.what, checked.numbers()))?;
+                continue;
+            }
             Outcome::Passed => "passed",
             Outcome::Failed => "FAILED",
             Outcome::NotChecked => "not checked",
@@ -299,12 +312,13 @@ pub(super) fn conductor_words(conductor: &Conductor) -> String {
 }
 
 /// `gG 63 A, 250 V DC, 25 kA`.
-pub(super) fn device_words(guard: &Guard) -> String {
+pub(super) fn device_words(guard: &Guard, specified: bool) -> String {
     let device = guard.device;
     let mut words = format!("{} {} A", device.family, digits(device.rating.get::<ampere>()));
+    let least = if specified { "at least " } else { "" };
     // Writing to a String cannot fail.
     let _ = match device.supply {
-        Supply::Dc(rated) => write!(words, ", {} V DC", digits(rated.get::<volt>())),
+        Supply::Dc(rated) => write!(words, ", {least}{} V DC", digits(rated.get::<volt>())),
         Supply::PerPole(each, poles) => {
             write!(words, ", {poles} poles of {} V DC", digits(each.get::<volt>()))
         }
@@ -312,7 +326,7 @@ pub(super) fn device_words(guard: &Guard) -> String {
         Supply::NotStated => write!(words, ", DC voltage not stated"),
     };
     let _ = match device.breaking {
-        Some(amps) => write!(words, ", breaks {} kA", digits(amps.get::<ampere>() / 1000.0)),
+        Some(amps) => write!(words, ", breaks {least}{} kA", digits(amps.get::<ampere>() / 1000.0)),
         None => write!(words, ", what it breaks on DC not stated"),
     };
     if device.polarity == Polarity::Marked {

@@ -19,7 +19,7 @@ use crate::cable::{Stud, joint_resistance, lug_fits};
 use crate::circuit::{Demand, Judgement, Outcome, Run, judge};
 use crate::citation::Citation;
 use crate::device::{Polarity, Supply};
-use crate::protection::{End, PoleFault, pole_fault};
+use crate::protection::{End, Pole, PoleFault, pole_fault};
 use crate::quantity::ElectricCurrent;
 use crate::rules::Key;
 
@@ -122,14 +122,18 @@ impl Place<'_> {
 
     /// Conductors of engine starting: exempt from devices under craft rules (R7).
     fn is_exempt(&self) -> bool {
-        self.circuit.cranking && matches!(self.site.rules.set().key, Key::CraftIso | Key::CraftUs)
+        let load = match self.child {
+            Some(Item::Load(i)) => self.site.loads.get(i),
+            _ => None,
+        };
+        self.circuit.starts_engine(load) && self.site.rules.exempts_cranking()
     }
 
     /// The checks of the run itself.
     fn checks(&self, found: &mut Findings) {
         use crate::rules::Check::{
-            Ampacity, Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate,
-            TerminalColumn, Termination, Withstand,
+            Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate, Termination,
+            Withstand,
         };
         let of_device = |check| {
             matches!(
@@ -155,17 +159,11 @@ impl Place<'_> {
             (None, None) => None,
         };
         for checked in &self.planned.judgement.checks {
-            // Engine starting lasts seconds; the tables are for continuous current.
-            let mut checked = *checked;
-            if self.is_exempt() && matches!(checked.check, Ampacity | TerminalColumn) {
-                checked.outcome = Outcome::NotChecked;
-                checked.what = "seconds of engine starting against a table for continuous current";
-            }
             let (place, line) = match &first {
                 Some(device) if of_device(checked.check) => device.clone(),
                 _ => (self.place(), self.circuit.line),
             };
-            found.0.extend(of_check(&checked, &place, line, material, required));
+            found.0.extend(of_check(checked, &place, line, material, required));
         }
         for (fitted, judgement) in self.planned.fitted.iter().skip(1).zip(&self.planned.further) {
             let (place, line) = self.of_device(fitted);
@@ -180,19 +178,34 @@ impl Place<'_> {
         for fitted in &self.planned.fitted {
             let (place, line) = self.of_device(fitted);
             let entry = fitted.entry.and_then(|e| self.circuit.devices.get(e));
-            // A device that is designed goes into every unearthed pole.
+            // A device that is designed goes into every unearthed pole; single ones at one end add up.
             if let Some(entry) = entry {
-                match pole_fault(self.site.earthing, entry.pole) {
+                let others = self.planned.fitted.iter().filter(|f| f.end == fitted.end);
+                let mut poles = others.filter_map(|f| self.circuit.devices.get(f.entry?)).map(|d| d.pole);
+                let pole = if poles.all(|p| p == entry.pole) { entry.pole } else { Pole::Both };
+                match pole_fault(self.site.earthing, pole) {
                     None => {}
                     Some(PoleFault::EarthedPoleAlone) => found.add(
-                        Severity::Danger, "R7", "device-in-earthed-pole", place.clone(), line,
-                        "the device opens the earthed pole alone: a fault from the other pole to earth is not interrupted".to_string(),
-                        None, "move it to the unearthed pole",
+                        Severity::Danger,
+                        "R7",
+                        "device-in-earthed-pole",
+                        place.clone(),
+                        line,
+                        "the device opens the earthed pole alone: a fault from the other pole to earth is not \
+                         interrupted"
+                            .to_string(),
+                        None,
+                        "move it to the unearthed pole",
                     ),
                     Some(PoleFault::OnePoleOfFloating) => found.add(
-                        Severity::Danger, "R7", "one-pole-of-floating-system", place.clone(), line,
+                        Severity::Danger,
+                        "R7",
+                        "one-pole-of-floating-system",
+                        place.clone(),
+                        line,
                         "the system floats and only one pole has a device".to_string(),
-                        None, "put a device into both poles",
+                        None,
+                        "put a device into both poles",
                     ),
                 }
             }
