@@ -95,7 +95,7 @@ pub fn pairs() -> Vec<Pair> {
             failing: "aR",
             also: &[],
         },
-        // UL 1077 covers devices inside equipment that another device guards (recalled).
+        // NFPA 70-2023, 240.10 (recalled): supplementary protection stands behind a branch circuit's own device.
         Pair {
             rule: "R5",
             edge: "a supplementary protector alone guards no circuit",
