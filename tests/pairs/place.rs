@@ -269,6 +269,20 @@ pub fn pairs() -> Vec<Pair> {
             failing: "positive",
             also: &[],
         },
+        // With one at each end a fault between them keeps one pole that nothing opens.
+        Pair {
+            rule: "R7",
+            edge: "floating: two single-pole devices sit at one end",
+            slug: "one-pole-of-floating-system",
+            severity: Danger,
+            site: Document::run("iec")
+                .with("site", "earthing = 'floating'")
+                .with("circuit.device", "pole = 'positive'")
+                .add("circuit.device", &format!("{}; pole = 'negative'; end = '?'", device("gG", "20 A"))),
+            passing: "from",
+            failing: "to",
+            also: &[],
+        },
         pole(
             "one-pole-of-floating-system",
             "floating: not in the negative pole alone",
