@@ -1,4 +1,4 @@
-"""What the printed report says, circuit by circuit."""
+"""What the printed report says, circuit by circuit, and the assumptions it names."""
 
 import re
 
@@ -19,28 +19,66 @@ def amount(text):
 
 
 def two_digits(text):
-    """As `amount`, for a number rounded to two significant digits."""
-    shown = float(text)
+    """As `amount`, for a current rounded to two significant digits."""
+    number, unit = re.match(NUMBER + r"\s*(\S*)", text).groups()
+    shown = float(number) * UNIT.get(unit, 1.0)
     return shown, 0.5 * 10 ** (len(str(int(shown))) - 2)
 
 
 class Check:
+    """One line: label, value, limit; `path` names another circuit whose check a smaller size fails."""
+
     def __init__(self, mark, line):
         self.mark = mark
+        self.path, line = re.match(r'(?:path to "(.*?)": )?(.*)', line).groups()
         found = re.match(r"(.*): (-?[\d.]+ ?\S*), at (most|least) (-?[\d.]+ ?[^\s:]*)(.*)", line)
         self.label = found[1] if found else line
         self.actual, self.sense, self.limit = (found[2], found[3], found[4]) if found else (None, None, None)
 
 
+class Assumptions:
+    """Figures from "Taken where the document says nothing"."""
+
+    def __init__(self, text):
+        text = text.split("\nTaken where the document says nothing\n", 1)[1].split("\n\n", 1)[0]
+        lug = re.search(r"crimped lugs of ([\d.]+) mΩ", text)
+        self.lug_ohm = float(lug[1]) / 1000 if lug else None
+
+        def volts(kind):
+            return float(re.search(kind + r" (\d+) mV", text)[1]) / 1000
+
+        self.fuse_V, self.breaker_V = volts("fuse with holder"), volts("breaker pole")
+        self.part_V = {"switch": volts("switch or selector"), "selector": volts("switch or selector"),
+                       "relay": volts("relay"), "shunt": volts("shunt")}
+        self.full_cell_V = float(re.search(r"full and warm \(([\d.]+) V a lead-acid cell", text)[1])
+        self.empty_cell_V = float(re.search(r"empty \(([\d.]+) V a lead-acid cell", text)[1])
+        self.aged_ratio = float(re.search(r"([\d.]+) times lead-acid", text)[1])
+        self.installed = {}
+        for way, names in re.findall(r"- installed as (.+?): (.*)", text):
+            self.installed |= dict.fromkeys(names.split(", "), way)
+        self.flat = text
+
+
+def device(line):
+    """Family, rating, the end it sits at, poles, greatest current of a device line."""
+    found = re.match(r"(.+?): (.+?) ([\d.]+) A, ", line)
+    if not found:
+        return None
+    place = re.search(r'(?:at|from) "(.+?)"', line)
+    greatest = re.search(r"greatest fault current (\d+) A", line)
+    return {"name": found[1], "family": found[2], "rating": float(found[3]), "at": place[1] if place else None,
+            "poles": 2 if "both poles" in line else 1, "greatest": greatest and greatest[1]}
+
+
 def circuits(text):
-    """Printed circuits by name: texts of each line, and checks."""
+    """Printed circuits by name: texts of each line, devices, checks and sizes not taken."""
     found, current = {}, None
-    in_detail = text.split("\nCircuits in detail\n", 1)[1].split("\nTaken where")[0].split("\nTo buy")[0]
+    detail = text.split("\nCircuits in detail\n", 1)[1].split("\nTo buy")[0].split("\nTaken where")[0]
     table = text.split("\nCircuits\n", 1)[1].split("\n\n", 1)[0].splitlines()[1:]
-    for line in in_detail.splitlines():
+    for line in detail.splitlines():
         head = re.match(r"  (\d+)  (.+?): (.+) – (.+)$", line)
         if head:
-            current = {"name": head[2], "checks": [], "refused": [], "row": table[len(found)]}
+            current = {"name": head[2], "checks": [], "refused": [], "devices": [], "row": table[len(found)]}
             found[head[2]] = current
             continue
         body = re.match(r"    (\S+(?: \S+)?)\s{2,}(.*)$", line)
@@ -51,14 +89,14 @@ def circuits(text):
             current["checks"].append(Check(mark, rest))
         elif mark == "not taken":
             size, reason = rest.split(": ", 1)
-            current["refused"].append((size, reason))
+            current["refused"].append((size, Check("FAILED", reason)))
+        elif mark == "device":
+            current["devices"] += filter(None, [device(rest)])
         else:
-            current[mark] = rest
+            current["capacity" if mark == "ampacity" else mark] = rest
     for circuit in found.values():
-        conductor = circuit["conductor"]
-        circuit["size"] = re.match(r"\S+ \S+?(?= )", conductor)[0].strip()
-        circuit["insulation"] = conductor.split(", ")[1]
-        device = re.match(r"\S+: (.+?) ([\d.]+) A, ", circuit["device"])
-        circuit["family"], circuit["rating"] = (device[1], float(device[2])) if device else (None, None)
-        circuit["designed"] = conductor.endswith("designed")
+        words = circuit["conductor"].split(", ")
+        circuit["size"] = re.match(r"\S+ \S+?(?= )", words[0])[0].strip()
+        circuit["insulation"] = words[1]
+        circuit["designed"] = circuit["conductor"].rstrip().endswith(("designed", "to be bought"))
     return found

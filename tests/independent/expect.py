@@ -1,0 +1,146 @@
+"""What we hold for one circuit of a network, and for each check that the report prints of it."""
+
+import re
+
+from tables import LEAST, area, cell, next_standard, us_ampacity, value, withstand_k
+
+
+class Expectation:
+    """Over every bank that may feed alone, at cut-off and at the highest voltage: greatest currents, least volts."""
+
+    def __init__(self, network, circuit, frozen=None):
+        """With `frozen`, currents stay those of another network with the same circuits."""
+        self.network, self.circuit, self.keys = network, circuit, circuit.keys
+        low = {root: network.solve(root, frozen=frozen) for root in network.banks}
+        high = {root: network.solve(root, "highest") for root in network.banks}
+        name, self.is_link = circuit.name, circuit in network.links
+        load = network.loads.get(self.keys["to"], {})
+        # Only ways through this circuit count for its far end; a bank may be the far end too.
+        self.far = {} if self.is_link else {root: far for root in network.banks
+                                            for c, _, far in network.grown(root, network.links) if c is circuit}
+        if self.is_link:
+            self.amps = self.hours = self.low_amps = value(self.keys["current"])
+        else:
+            worst = max([*low.values(), *high.values()], key=lambda s: s[0][name])
+            self.amps, self.low_amps = worst[0][name], max(s[0][name] for s in low.values())
+            self.hours = self.amps * self.share(worst[1])
+        self.degrees = circuit.temperature(self.amps)
+        self.ohms = circuit.ohms(self.degrees)
+        ends = [(root, low[root][1][far]) for root, far in self.far.items() if low[root][0][name] > 0]
+        if self.is_link:
+            near = next(e for e in circuit.ends if e not in network.banks)
+            self.path = self.low_amps * self.ohms / network.nominal * 100
+            self.end = min(s[1][near] for s in low.values() if near in s[1]) - self.low_amps * self.ohms
+        else:
+            self.path = max((value(network.banks[r]["cut_off"]) - end) / network.nominal * 100 for r, end in ends)
+            self.end = min(end for _, end in ends)
+        self.start = None
+        if "start" in load:
+            self.start = min(network.solve(r, starting=self.keys["to"], frozen=frozen)[1][self.keys["to"]]
+                             for r in network.banks)
+        self.uses = {network.loads[n].get("use", "other") for n in self.served()}
+        self.least_supply = load.get("least")
+        # A device at an end guards against what that end feeds.
+        guarded = {d["at"] for d in circuit.devices} or {circuit.ends[0]}
+        self.greatest = {end: network.greatest(end, circuit) for end in guarded}
+        fed = [end for end in guarded if self.fed_from(end)]
+        self.least = min(network.least(end, circuit) for end in fed)
+
+    def fed_from(self, end):
+        return end in self.network.banks or any(
+            far == end for root in self.network.banks for _, _, far in self.network.grown(root, [self.circuit]))
+
+    def served(self):
+        """Loads that this circuit feeds, from any bank."""
+        names = set()
+        for root, beyond in self.far.items():
+            below = {beyond}
+            for _, near, far in self.network.grown(root, self.network.links):
+                below |= {far} if near in below else set()
+            names |= below & set(self.network.loads)
+        return names
+
+    def share(self, volts):
+        """Share of the current that is drawn for hours."""
+        parts = [(self.network.draw(n, volts[n], None), self.network.loads[n].get("continuous", True))
+                 for n in self.served() if n in volts]
+        links = sum(value(link.keys["current"]) for link in self.network.links
+                    if any(self.circuit in list(self.network.path(r, e)) for r in self.network.banks for e in link.ends))
+        total = sum(p[0] for p in parts) + links
+        return (sum(amps for amps, hours in parts if hours) + links) / total
+
+    def demand(self):
+        """Current that the device has to carry, by rule set and family."""
+        if self.circuit.rules == "us":
+            return self.amps + 0.25 * self.hours
+        if self.circuit.family and self.circuit.family not in ("gG",) and not self.circuit.family.startswith("miniature"):
+            return self.hours / 0.8 + self.amps - self.hours
+        return self.amps
+
+    def column(self):
+        """60 °C up to 100 A, 75 °C above or where everything is marked for it; never above the insulation."""
+        marks = [self.keys.get("terminal")] + [d.get("terminal") for d in stated_devices(self.keys)]
+        marked = all(m and value(m) >= 75 for m in marks)
+        return "75C" if (marked or self.amps > 100) and self.circuit.insulation >= 75 else "60C"
+
+    def device_limit(self):
+        c = self.circuit
+        if c.rules in ("iec", "craft_iso"):
+            return c.ampacity
+        if c.rules == "craft_us":
+            return min(next_standard(c.ampacity), 1.5 * c.ampacity)
+        carried = min(c.ampacity, us_ampacity(c.size, self.column()))
+        small = cell("ampacity.toml", "nec-240-4-d-small-conductors", c.size.removesuffix(" AWG"), "max_ocpd_A")
+        return min(next_standard(carried), small or float("inf"))
+
+    def drop_limit(self):
+        boards = {b["name"] for b in self.network.site["board"]}
+        feeds_board = not self.is_link and bool(set(self.far.values()) & boards)
+        if self.circuit.rules == "us":
+            return 3 if feeds_board else 5
+        if self.circuit.rules == "iec":
+            return 3 if self.uses & {"lighting", "critical"} else 5
+        return 3 if feeds_board or self.keys["to"] in self.network.loads and "critical" in self.uses else 10
+
+    def check(self, label):
+        """(actual, limit) that we hold for a printed check; None where there is nothing to recompute."""
+        c = self.circuit
+        column = re.search(r"(60|75) °C column", label)
+        simple = {
+            "mechanical minimum": lambda: (area(c.size), area(LEAST[c.rules])),
+            "design current": lambda: (self.amps, c.ampacity),
+            "rating of the device": lambda: (c.rating, self.demand()),
+            "device against its conductor": lambda: (c.rating, self.device_limit()),
+            "current I2 at which": lambda: (c.opens(), 1.45 * c.ampacity),
+            "current at which the device opens": lambda: (c.opens(), 1.45 * c.ampacity),
+            "voltage drop": lambda: (self.path, self.drop_limit()),
+            "voltage at the far end while": lambda: (self.start, value(self.least_supply)),
+            "voltage at the far end": lambda: (self.end, value(self.least_supply)),
+            "voltage rating": lambda: (value(self.part()["dc_voltage"]), self.highest()),
+            "breaking capacity": lambda: (value(self.part()["breaking"]), max(self.greatest.values())),
+            "interrupting rating": lambda: (value(self.part()["breaking"]), max(self.greatest.values())),
+            "least prospective": lambda: (self.least, c.opens()),
+            "let-through": lambda: (value(self.part()["let_through"]),
+                                    (withstand_k(c.rules, c.insulation, c.compound) * area(c.size)) ** 2),
+            "greatest conductor": lambda: (area(c.size), area(self.part()["terminal_range"][1])),
+            "current while it starts": lambda: (
+                value(self.network.loads[self.keys["to"]]["start"]),
+                cell("protection.toml", "iec-60898-3-dc-trip-bands", c.family[-1], "no_trip") * c.rating),
+        }
+        if column:
+            return self.amps + 0.25 * self.hours, us_ampacity(c.size, self.column())
+        return next((held() for begin, held in simple.items() if label.startswith(begin)), None)
+
+    def highest(self):
+        return max(value(b["highest"]) for b in self.network.site["bank"])
+
+    def part(self):
+        """The device as the file states it, or the one on the shelf."""
+        return next(iter(stated_devices(self.keys)), None) or next(
+            d for d in self.network.site["stock"]["device"]
+            if d["family"] == self.circuit.family and self.circuit.rating in map(value, d["ratings"]))
+
+
+def stated_devices(keys):
+    found = keys.get("device", [])
+    return found if isinstance(found, list) else []
