@@ -4,7 +4,7 @@
 //! `craft_iso`: ISO 10133:2012, Table A.1, and ISO 13297:2020, all recalled. `tests/reference/ampacity.toml` holds both.
 //! Class T opens at 1.35 In (recalled), below 1.45, so the device's limit decides alone.
 
-use ampwright::site::Severity::{Danger, Nonconforming};
+use ampwright::site::Severity::{Danger, Nonconforming, NotChecked};
 
 use crate::document::Document;
 use crate::pair::Pair;
@@ -151,6 +151,17 @@ pub fn pairs() -> Vec<Pair> {
                 .with("circuit.device", "rating = '70 A'; full_rated = true"),
             passing: "64 A",
             failing: "66 A",
+            also: &[],
+        },
+        // Starting lasts seconds; the tables are for continuous current.
+        Pair {
+            rule: "R4",
+            edge: "cranking conductors are not checked against continuous current",
+            slug: "ampacity-not-checked",
+            severity: NotChecked,
+            site: us().with("load", "continuous = false").with("circuit", "cranking = ?"),
+            passing: "false",
+            failing: "true",
             also: &[],
         },
         Pair {

@@ -3,6 +3,10 @@
 //! Ampacities: NFPA 70-2023, Table 310.16; ambient 310.15(B)(1)(1), bundling 310.15(C)(1), small conductors 240.4(D),
 //! ratings 240.6(A): `tests/reference/ampacity.toml` and `protection.toml` (page seen, some cells recalled there).
 //! 60 °C up to 100 A, else 75 °C: 110.14(C)(1), recalled. Factor 1.25: 210.20(A), 215.3.
+//!
+//! The device is held against the lesser of terminal's column and derated ampacity, or the next standard rating above
+//! that. So the pairs on the terminal's column stand where the column is no standard rating itself: 6 AWG has 55, 65 and
+//! 75 A at 60, 75 and 90 °C, 4/0 AWG 195 and 230 A at 60 and 75 °C; next ratings 60, 70 and 250 A.
 
 use ampwright::site::Severity::{Danger, Nonconforming, NotChecked};
 
@@ -29,55 +33,56 @@ fn marked() -> Document {
 
 pub fn pairs() -> Vec<Pair> {
     vec![
-        // 8 AWG: 40 A in the 60 °C column, 55 A in its own of 90 °C; 40/1.25 = 32 A.
+        // 6 AWG: 55 A in the 60 °C column, 75 A in its own of 90 °C; 55/1.25 = 44 A. The device may have 60 A.
         terminal_column(
             "unmarked terminals take the 60 °C column",
             Document::run("us")
                 .with("load", "current = '?'")
-                .with("circuit", "size = '8 AWG'; insulation = 'PVC 90 degC'")
-                .with("circuit.device", "rating = '45 A'"),
-            "31.5 A",
-            "32.5 A",
+                .with("circuit", "size = '6 AWG'; insulation = 'PVC 90 degC'")
+                .with("circuit.device", "rating = '60 A'"),
+            "43.5 A",
+            "44.5 A",
         ),
-        // 50 A in the 75 °C column; 50/1.25 = 40 A.
+        // 65 A in the 75 °C column; 65/1.25 = 52 A.
         terminal_column(
             "terminals marked for 75 °C take the 75 °C column",
             marked()
                 .with("load", "current = '?'")
-                .with("circuit", "size = '8 AWG'; insulation = 'PVC 90 degC'")
-                .with("circuit.device", "rating = '60 A'"),
-            "39.5 A",
-            "40.5 A",
+                .with("circuit", "size = '6 AWG'; insulation = 'PVC 90 degC'")
+                .with("circuit.device", "rating = '70 A'"),
+            "51.5 A",
+            "52.5 A",
         ),
-        // A mark of 90 °C takes no more than the 75 °C column: 40 A again, where 55/1.25 = 44 A would be the other edge.
+        // A mark of 90 °C takes no more than the 75 °C column: 52 A again, where 75/1.25 = 60 A would be the other edge.
         terminal_column(
             "no terminal takes a column above 75 °C",
             Document::run("us")
                 .with("load", "current = '?'")
-                .with("circuit", "size = '8 AWG'; insulation = 'PVC 90 degC'; terminal = '90 degC'")
-                .with("circuit.device", "rating = '60 A'; terminal = '90 degC'"),
-            "39.5 A",
-            "40.5 A",
+                .with("circuit", "size = '6 AWG'; insulation = 'PVC 90 degC'; terminal = '90 degC'")
+                .with("circuit.device", "rating = '70 A'; terminal = '90 degC'"),
+            "51.5 A",
+            "52.5 A",
         ),
-        // 1.25 × 33 A = 41.3 A: within the 50 A of 75 °C, above the 40 A of 60 °C that a device without mark leaves.
+        // 1.25 × 46 A = 57.5 A: within the 65 A of 75 °C, above the 55 A of 60 °C that a device without mark leaves.
         terminal_column(
             "the lower mark of terminal and device counts",
             Document::run("us")
-                .with("load", "current = '33 A'")
-                .with("circuit", "size = '8 AWG'; insulation = 'PVC 90 degC'; terminal = '75 degC'")
-                .with("circuit.device", "rating = '45 A'; ?"),
+                .with("load", "current = '46 A'")
+                .with("circuit", "size = '6 AWG'; insulation = 'PVC 90 degC'; terminal = '75 degC'")
+                .with("circuit.device", "rating = '60 A'; ?"),
             "terminal = '75 degC'",
             "",
         ),
-        // 1/0 AWG above 100 A: 150 A in the 75 °C column without any mark; 150/1.25 = 120 A. 125 A would be 60 °C.
+        // 4/0 AWG above 100 A: 230 A in the 75 °C column without any mark; 230/1.25 = 184 A. 195/1.25 = 156 A would be
+        // 60 °C.
         terminal_column(
             "above 100 A unmarked terminals take the 75 °C column",
             Document::run("us")
                 .with("load", "current = '?'")
-                .with("circuit", "size = '1/0 AWG'; insulation = 'PVC 90 degC'")
-                .with("circuit.device", "rating = '175 A'"),
-            "119 A",
-            "121 A",
+                .with("circuit", "size = '4/0 AWG'; insulation = 'PVC 90 degC'")
+                .with("circuit.device", "rating = '250 A'"),
+            "183 A",
+            "185 A",
         ),
         // 10 AWG, 60 °C column: 30 A. 29 A pass as they are, 1.25 × 29 = 36.3 A do not.
         terminal_column(
@@ -141,19 +146,58 @@ pub fn pairs() -> Vec<Pair> {
             "90 A",
             "100 A",
         ),
-        // 14 AWG of 90 °C carries 25 A, yet takes no device above 15 A.
+        // The terminal decides where its column is the lesser: 8 AWG of 90 °C carries 55 A, but 40 A in the 60 °C column,
+        // a standard rating itself.
+        device_limit(
+            "the device follows the terminal's column where that is the lesser",
+            Document::run("us")
+                .with("circuit", "size = '8 AWG'; insulation = 'PVC 90 degC'")
+                .with("circuit.device", "rating = '?'"),
+            "40 A",
+            "45 A",
+        ),
+        // 6 AWG: 55 A in the 60 °C column is no standard rating, the next is 60 A; by the 75 A of its insulation 80 A.
+        device_limit(
+            "the next standard rating above the terminal's column is admitted, none beyond",
+            Document::run("us")
+                .with("circuit", "size = '6 AWG'; insulation = 'PVC 90 degC'")
+                .with("circuit.device", "rating = '?'"),
+            "60 A",
+            "70 A",
+        ),
+        // 8 AWG: 50 A with terminals of 75 °C at both ends, 40 A where the device's has no mark.
+        device_limit(
+            "a mark at the terminals admits the larger device",
+            Document::run("us")
+                .with("circuit", "size = '8 AWG'; insulation = 'PVC 90 degC'; terminal = '75 degC'")
+                .with("circuit.device", "rating = '50 A'; ?"),
+            "terminal = '75 degC'",
+            "",
+        ),
+        // 6 AWG of 90 °C, 75 A × 0.7 = 52.5 A for nine together, next rating 60 A; × 0.5 = 37.5 A for ten, next rating
+        // 40 A. Terminals of 75 °C would leave 65 A and 70 A.
+        device_limit(
+            "the device follows the derated ampacity where that is the lesser",
+            marked()
+                .with("circuit", "size = '6 AWG'; insulation = 'PVC 90 degC'; bundled = ?")
+                .with("circuit.device", "rating = '60 A'"),
+            "9",
+            "10",
+        ),
+        // 14 AWG of 90 °C carries 25 A, 20 A at its terminals, yet takes no device above 15 A.
         device_limit(
             "14 AWG takes a 15 A device at most",
-            Document::run("us")
+            marked()
                 .with("load", "current = '10 A'")
                 .with("circuit", "size = '14 AWG'; insulation = 'PVC 90 degC'")
                 .with("circuit.device", "rating = '?'"),
             "15 A",
             "20 A",
         ),
+        // 25 A at its terminals.
         device_limit(
             "12 AWG takes a 20 A device at most",
-            Document::run("us")
+            marked()
                 .with("circuit", "size = '12 AWG'; insulation = 'PVC 90 degC'")
                 .with("circuit.device", "rating = '?'"),
             "20 A",

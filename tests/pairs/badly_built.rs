@@ -14,7 +14,7 @@ pub const HERON_POINT: &str = include_str!("../../core/examples/sites/heron_poin
 const FAULTS: [(&str, &str, Severity); 15] = [
     // 60 A on 12 AWG, which takes 20 A (NFPA 70-2023, 240.4(D)).
     (r#"circuit "bench lights", F5"#, "device-above-ampacity", Danger),
-    // More than 370 W/10.5 V × 1.25 = 44 A on 8 AWG, whose 60 °C column ends at 40 A and whose own at 55 A.
+    // 46 A × 1.25 = 57.5 A on 6 AWG, whose 60 °C column ends at 55 A and whose own at 75 A; the next rating is 60 A.
     (r#"circuit "compressor""#, "terminal-column-exceeded", Danger),
     // 2 m against 5 ft (recalled).
     (r#"circuit "bank main", F1"#, "device-too-far-from-source", Danger),

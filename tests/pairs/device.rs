@@ -28,13 +28,14 @@ fn below(edge: &'static str, site: Document, passing: &'static str, failing: &'s
 
 pub fn pairs() -> Vec<Pair> {
     vec![
-        // 8 AWG, 75 °C: 50 A. 1.6 × 45 = 72 A against 1.45 × 50 = 72.5 A; 1.6 × 50 = 80 A, though 50 A ≤ 50 A.
+        // 8 AWG, 75 °C as its terminals: 50 A. 1.6 × 45 = 72 A against 1.45 × 50 = 72.5 A; 1.6 × 50 = 80 A, though
+        // 50 A ≤ 50 A.
         late(
             "a gG fuse is chosen from its 1.6 In",
             Document::run("us")
                 .with("load", "current = '30 A'")
-                .with("circuit", "size = '8 AWG'")
-                .with("circuit.device", "family = 'gG'; rating = '?'"),
+                .with("circuit", "size = '8 AWG'; terminal = '75 degC'")
+                .with("circuit.device", "family = 'gG'; rating = '?'; terminal = '75 degC'"),
             "45 A",
             "50 A",
         ),
@@ -67,8 +68,8 @@ pub fn pairs() -> Vec<Pair> {
             "a family that opens late needs a smaller rating",
             Document::run("us")
                 .with("load", "current = '30 A'")
-                .with("circuit", "size = '8 AWG'")
-                .with("circuit.device", "family = '?'; rating = '50 A'"),
+                .with("circuit", "size = '8 AWG'; terminal = '75 degC'")
+                .with("circuit.device", "family = '?'; rating = '50 A'; terminal = '75 degC'"),
             "class T",
             "gG",
         ),
@@ -92,6 +93,17 @@ pub fn pairs() -> Vec<Pair> {
             site: Document::run("iec").with("circuit.device", "family = '?'"),
             passing: "gG",
             failing: "aR",
+            also: &[],
+        },
+        // NFPA 70-2023, 240.10 (recalled): supplementary protection stands behind a branch circuit's own device.
+        Pair {
+            rule: "R5",
+            edge: "a supplementary protector alone guards no circuit",
+            slug: "device-above-ampacity",
+            severity: Danger,
+            site: Document::run("us").with("circuit.device", "family = '?'"),
+            passing: "molded case",
+            failing: "supplementary",
             also: &[],
         },
         // 0.8 × 20 A = 16 A.

@@ -66,6 +66,33 @@ impl Document {
             .add("circuit.device", &device("class T", "30 A"))
     }
 
+    /// Two banks and a board between them, each behind a fuse at its own end, 1 m of 50 mm² from each: as
+    /// [`Document::run`] from the board, the second bank as the first but for these keys.
+    pub fn two_banks(reserve: &str) -> Self {
+        let conductor =
+            "one_way = '0.5 m'; size = '50 mm2'; insulation = 'PVC 70 degC'; installed = 'clipped'";
+        let fuse = device("gG", "63 A");
+        let mut site = Self::run("iec").with("circuit", "from = 'board'");
+        let bank = site.section("bank").clone();
+        site.0.push(("reserve", bank));
+        let mut site = site.with("reserve", "name = 'reserve'").with("reserve", reserve);
+        for (header, _) in site.0.iter_mut().filter(|(header, _)| *header == "reserve") {
+            *header = "bank";
+        }
+        site.add("board", "name = 'board'; busbar = '250 A'")
+            .add("circuit", &format!("name = 'feeder'; from = 'bank'; to = 'board'; {conductor}"))
+            .add("circuit.device", &fuse)
+            .add("circuit", &format!("name = 'link'; from = 'board'; to = 'reserve'; {conductor}"))
+            .add("circuit.device", &format!("{fuse}; end = 'to'"))
+    }
+
+    fn section(&mut self, header: &str) -> &mut Vec<String> {
+        self.0
+            .iter_mut()
+            .find(|(own, _)| *own == header)
+            .map_or_else(|| panic!("no section {header}"), |(_, section)| section)
+    }
+
     /// Adds a section with these keys behind the others; what belongs to a circuit follows its circuit.
     pub fn add(mut self, header: &'static str, keys: &str) -> Self {
         self.0.push((header, lines(keys)));
@@ -74,11 +101,7 @@ impl Document {
 
     /// Replaces, adds or takes out keys of the first section of this name.
     pub fn with(mut self, header: &str, keys: &str) -> Self {
-        let (_, section) = self
-            .0
-            .iter_mut()
-            .find(|(own, _)| *own == header)
-            .unwrap_or_else(|| panic!("no section {header}"));
+        let section = self.section(header);
         for line in lines(keys) {
             let place = section.iter().position(|own| name(own) == name(&line));
             match (place, line.ends_with(" = none")) {

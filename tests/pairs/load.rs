@@ -108,6 +108,17 @@ pub fn pairs() -> Vec<Pair> {
             failing: "15.4 V",
             also: &[],
         },
+        // Either bank can raise the whole site to its own highest voltage.
+        Pair {
+            rule: "R3",
+            edge: "a load bears the highest voltage of every bank joined",
+            slug: "voltage-too-high-at-load",
+            severity: Nonconforming,
+            site: Document::two_banks("highest = '?'").with("load", "greatest = '15.24 V'"),
+            passing: "15.2 V",
+            failing: "15.28 V",
+            also: &[],
+        },
         // 10 A through 10 × 8.466 mΩ (2.5 mm² at 35.5 °C, see path.rs) + 0.4 + 6.25 mΩ loses 0.913 V: 9.587 V of 10.5 V.
         Pair {
             rule: "R3",

@@ -6,6 +6,7 @@ mod ampacity_craft;
 mod ampacity_iec;
 mod ampacity_us;
 mod badly_built;
+mod bank;
 mod cli;
 mod device;
 mod document;
@@ -19,6 +20,7 @@ mod pair;
 mod part;
 mod path;
 mod place;
+mod start;
 
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -26,8 +28,9 @@ use ampwright::site::Severity;
 use pair::Pair;
 
 /// Fewer pairs than this and some have been lost.
-const LEAST: usize = 48;
-const RULES: [&str; 11] = ["R1", "R2", "R3", "R4", "R5", "R6", "R7", "R8", "R9", "R17", "R18"];
+const LEAST: usize = 200;
+const RULES: [&str; 16] =
+    ["R1", "R2", "R3", "R4", "R5", "R6", "R7", "R8", "R9", "R11", "R14", "R15", "R16", "R17", "R18", "R19"];
 
 fn pairs() -> Vec<Pair> {
     [
@@ -42,6 +45,8 @@ fn pairs() -> Vec<Pair> {
         part::pairs(),
         drop::pairs(),
         metal::pairs(),
+        bank::pairs(),
+        start::pairs(),
     ]
     .into_iter()
     .flatten()

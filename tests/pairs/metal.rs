@@ -2,7 +2,7 @@
 //!
 //! Rule R18 of the design. Stranded conductors under craft rules: 33 CFR 183.425 and ISO 13297, recalled.
 
-use ampwright::site::Severity::{self, Danger, Nonconforming};
+use ampwright::site::Severity::{self, Danger, Nonconforming, NotChecked};
 
 use crate::document::Document;
 use crate::pair::Pair;
@@ -62,6 +62,21 @@ pub fn pairs() -> Vec<Pair> {
             "aluminium = 'admitted'",
             "drop = '5 %'",
         ));
+    }
+    // The tables held are copper's: what aluminium carries is not told from them.
+    for set in ["us", "iec", "craft_iso", "craft_us"] {
+        pairs.push(Pair {
+            slug: "ampacity-not-checked",
+            ..refused(
+                "what admitted aluminium carries is not checked",
+                NotChecked,
+                Document::run(set)
+                    .with("circuit", "material = '?'")
+                    .add("rules.override", "aluminium = 'admitted'"),
+                "copper",
+                "aluminium",
+            )
+        });
     }
     for set in ["us", "iec"] {
         pairs.push(refused(

@@ -88,6 +88,29 @@ pub fn pairs() -> Vec<Pair> {
             "40 degC",
             "45 degC",
         ),
+        // 36 mΩ (3 % of 12 V at 10 A) less lugs and a 20 A fuse, 5.4 mΩ. 2.5 mm², 105 °C, 35 A × 0.7746 = 27.1 A in an
+        // engine space of 60 °C: 60 + 45·(10/27.1)² = 66.1 °C, 7.98 × 1.1812 = 9.426 mΩ/m: 3.246 m, route 1.62 m. In air
+        // of 30 °C it would be 1.78 m.
+        drop(
+            "R2",
+            "an engine space heats the conductor",
+            Document::run("craft_iso")
+                .with("load", "use = 'critical'")
+                .with("circuit", "space = 'engine'; one_way = '?'"),
+            "1.60 m",
+            "1.65 m",
+        ),
+        // 6 mm² (3.30 Ω/km), counted as 10 AWG, 60 A × 0.85 = 51 A in 50 °C (33 CFR 183.425, Table 5, note 1, page seen):
+        // 50 + 55·(10/51)² = 52.1 °C, 3.30 × 1.1261 = 3.716 mΩ/m: 8.234 m, route 4.12 m. In air of 30 °C 4.42 m.
+        drop(
+            "R2",
+            "an engine space heats the conductor",
+            Document::run("craft_us")
+                .with("load", "use = 'critical'")
+                .with("circuit", "size = '6 mm2'; space = 'engine'; one_way = '?'"),
+            "4.05 m",
+            "4.18 m",
+        ),
         // Weakest bank 6 × 1.98 V = 11.88 V behind 5 mΩ × 2 × 1.5 × 1.5 (empty, cold, aged: common practice, no source).
         // Class T 20 A opens at 1.35 × 20 = 27 A (UL 248, recalled): 440 mΩ, less 22.5 and 5.4 mΩ: 412.1 mΩ. Hot, 70 °C:
         // 7.98 × 304.5/254.5 = 9.548 mΩ/m: 43.2 m, 21.6 m route. Cold it would reach 25.8 m.

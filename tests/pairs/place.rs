@@ -1,8 +1,8 @@
 //! Where devices sit: distance from the source, ends, poles (R7).
 //!
 //! Distances: `craft_us` 7 in, 40 in in sheath, 72 in in sheath from a battery post (33 CFR 183.455, ABYC E-11, recalled);
-//! `craft_iso` 200 mm (ISO 13297, recalled); `iec` 3 m (IEC 60364-4-43, 434.2.1, recalled); `us` 5 ft (690.71(H) of 2014,
-//! recalled). An inch is 25.4 mm, a foot 304.8 mm.
+//! `craft_iso` 200 mm (ISO 13297, recalled); `iec` 3 m, in a sheath or enclosure throughout (IEC 60364-4-43, 434.2.1,
+//! recalled); `us` 5 ft (690.71(H) of 2014, recalled). An inch is 25.4 mm, a foot 304.8 mm.
 
 use ampwright::site::Severity::{Danger, NotChecked};
 
@@ -76,9 +76,47 @@ fn missing(set: &str) -> Pair {
         edge: "only cranking conductors under craft rules go without a device",
         slug: "device-missing",
         severity: Danger,
-        site: Document::run(set).without("circuit.device").with("circuit", "device = 'none'; cranking = ?"),
+        site: cranking(set).with("circuit", "cranking = ?"),
         passing: "true",
         failing: "false",
+        also: &[],
+    }
+}
+
+/// A run without a device to a load that starts an engine.
+fn cranking(set: &str) -> Document {
+    Document::run(set)
+        .without("circuit.device")
+        .with("load", "continuous = false")
+        .with("circuit", "device = 'none'; cranking = true")
+}
+
+/// What runs for hours starts no engine.
+fn not_starting(set: &str) -> Pair {
+    Pair {
+        rule: "R7",
+        edge: "a continuous load makes no cranking conductor",
+        slug: "device-missing",
+        severity: Danger,
+        site: cranking(set).with("load", "continuous = ?"),
+        passing: "false",
+        failing: "true",
+        also: &[],
+    }
+}
+
+/// A feeder of a board on the way to the starter is no cranking conductor.
+fn feeder_to_starter() -> Pair {
+    Pair {
+        rule: "R7",
+        edge: "cranking conductors end at their load",
+        slug: "device-missing",
+        severity: Danger,
+        site: cranking("craft_us").with("circuit", "to = none; ?"),
+        passing: "to = 'load'",
+        failing: "to = 'board'\n\n[[board]]\nname = 'board'\nbusbar = '100 A'\n\n[[circuit]]\nname = 'branch'\n\
+                  from = 'board'\nto = 'load'\none_way = '1 m'\nsize = '10 AWG'\ninsulation = 'PVC 105 degC'\n\
+                  cranking = true\ndevice = 'none'",
         also: &[],
     }
 }
@@ -98,7 +136,7 @@ pub fn pairs() -> Vec<Pair> {
             "1.85 m",
         ),
         distance("200 mm from the source", Document::run("craft_iso"), "195 mm", "205 mm"),
-        distance("3 m from the source", Document::run("iec"), "2.95 m", "3.05 m"),
+        distance("3 m in a sheath", sheathed(Document::run("iec")), "2.95 m", "3.05 m"),
         // 5 ft = 1.524 m.
         distance("5 ft from the source", Document::run("us"), "1.5 m", "1.55 m"),
         // The user's own length replaces the set's.
@@ -108,6 +146,29 @@ pub fn pairs() -> Vec<Pair> {
             "0.49 m",
             "0.51 m",
         ),
+        // The 3 m hold where risk of short-circuit is small, for which a sheath throughout is taken: without it no length
+        // is held.
+        Pair {
+            rule: "R7",
+            edge: "a length without sheath is not checked",
+            slug: "device-distance-not-limited",
+            severity: NotChecked,
+            site: Document::run("iec").with("circuit", "sheathed = ?"),
+            passing: "true",
+            failing: "false",
+            also: &[],
+        },
+        // At the source's very terminal there is no length to judge.
+        Pair {
+            rule: "R7",
+            edge: "a device at its source's terminal needs no length",
+            slug: "device-distance-not-limited",
+            severity: NotChecked,
+            site: Document::run("iec").with("circuit.device", "from_source = '?'"),
+            passing: "0 mm",
+            failing: "10 mm",
+            also: &[],
+        },
         // More is admitted in a sheath throughout, but nobody recalls how much.
         Pair {
             rule: "R7",
@@ -159,16 +220,16 @@ pub fn pairs() -> Vec<Pair> {
         },
         missing("craft_iso"),
         missing("craft_us"),
+        not_starting("craft_iso"),
+        not_starting("craft_us"),
+        feeder_to_starter(),
         // The exemption belongs to the craft rules.
         Pair {
             rule: "R7",
             edge: "cranking conductors go without a device under craft rules only",
             slug: "device-missing",
             severity: Danger,
-            site: Document::run("craft_iso")
-                .with("site", "rules = '?'")
-                .without("circuit.device")
-                .with("circuit", "size = '16 mm2'; device = 'none'; cranking = true"),
+            site: cranking("craft_iso").with("site", "rules = '?'").with("circuit", "size = '16 mm2'"),
             passing: "craft_iso",
             failing: "iec",
             also: &[],
@@ -195,6 +256,33 @@ pub fn pairs() -> Vec<Pair> {
             "negative",
         ),
         pole("one-pole-of-floating-system", "floating: in both poles", "floating", "both", "positive"),
+        Pair {
+            rule: "R7",
+            edge: "floating: two single-pole devices guard both poles",
+            slug: "one-pole-of-floating-system",
+            severity: Danger,
+            site: Document::run("iec")
+                .with("site", "earthing = 'floating'")
+                .with("circuit.device", "pole = 'positive'")
+                .add("circuit.device", &format!("{}; pole = '?'", device("gG", "20 A"))),
+            passing: "negative",
+            failing: "positive",
+            also: &[],
+        },
+        // With one at each end a fault between them keeps one pole that nothing opens.
+        Pair {
+            rule: "R7",
+            edge: "floating: two single-pole devices sit at one end",
+            slug: "one-pole-of-floating-system",
+            severity: Danger,
+            site: Document::run("iec")
+                .with("site", "earthing = 'floating'")
+                .with("circuit.device", "pole = 'positive'")
+                .add("circuit.device", &format!("{}; pole = 'negative'; end = '?'", device("gG", "20 A"))),
+            passing: "from",
+            failing: "to",
+            also: &[],
+        },
         pole(
             "one-pole-of-floating-system",
             "floating: not in the negative pole alone",

@@ -111,19 +111,7 @@ pub fn judge(
     run.check()?;
     let thinner = if positive.size.area() <= negative.size.area() { positive } else { negative };
     let rating_degC = counted_rating(run, thinner, guard);
-    // The sets' tables held are copper's.
-    let ampacity = if thinner.material == Material::Copper {
-        run.rules.ampacity(&AmpacityQuery {
-            size: thinner.size,
-            rating_degC,
-            installation: run.installation,
-            ambient: run.ambient,
-            space: run.space,
-            bundled_conductors: run.bundled_conductors,
-        })
-    } else {
-        Err(OTHER_METALS)
-    };
+    let ampacity = capacity(run, thinner, guard);
 
     // First with the conductor at its greatest temperature, then at the one its current gives (R2).
     let hot = ThermodynamicTemperature::new::<degree_celsius>(thinner.insulation.rating_degC());
@@ -191,6 +179,26 @@ pub fn judge(
     }
     judged.ampacity = ampacity.ok();
     Ok(judged)
+}
+
+/// Ampacity of a conductor in the place of a run, after all factors; the temperature rating that counts is the lowest of
+/// insulation, terminals and device.
+///
+/// # Errors
+/// [`Error::TableEnds`] or [`Error::NotTabulated`] where no table of the set gives it.
+pub fn capacity(run: &Run, conductor: &Conductor, guard: Option<&Guard>) -> Result<Ampacity, Error> {
+    // The sets' tables held are copper's.
+    if conductor.material != Material::Copper {
+        return Err(OTHER_METALS);
+    }
+    run.rules.ampacity(&AmpacityQuery {
+        size: conductor.size,
+        rating_degC: counted_rating(run, conductor, guard),
+        installation: run.installation,
+        ambient: run.ambient,
+        space: run.space,
+        bundled_conductors: run.bundled_conductors,
+    })
 }
 
 const OTHER_METALS: Error = Error::NotTabulated {

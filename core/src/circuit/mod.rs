@@ -13,7 +13,7 @@ use crate::catalogue::Entry;
 
 pub use checked::{Checked, Numbers, Outcome, Relation, bound};
 pub use inverter::{InverterFeed, inverter_feed};
-pub use judge::{Judgement, judge};
+pub use judge::{Judgement, capacity, judge};
 pub use run::{Demand, Run};
 pub use size::{Governing, Rejected, SizedRun, device_need, size_run};
 

@@ -57,7 +57,11 @@ pub struct Finding {
 
 impl fmt::Display for Finding {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(f, "{} {} (line {}): {}", self.rule, self.place, self.line, self.text)?;
+        write!(f, "{} {}", self.rule, self.place)?;
+        if self.line > 0 {
+            write!(f, " (line {})", self.line)?;
+        }
+        write!(f, ": {}", self.text)?;
         if !self.source.is_empty() {
             write!(f, " [{}]", self.source)?;
         }

@@ -1,6 +1,7 @@
 //! How a plan grows: which circuit takes a larger size, and where a device is added.
 
 use alloc::format;
+use alloc::string::ToString;
 use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
@@ -11,7 +12,7 @@ use super::model::Site;
 use super::plan::{Draft, Planned};
 use super::reach::Reach;
 use super::read::{Problem, Problems};
-use crate::circuit::Checked;
+use crate::circuit::{Checked, Outcome, capacity};
 use crate::rules::Check;
 
 /// Enlarges what fails; `true` where something grew.
@@ -53,7 +54,7 @@ pub(super) fn enlarge(
             if grow(circuit, drafts) {
                 grew = true;
             } else {
-                problems.push(cannot_serve(site, circuit, &check));
+                problems.push(cannot_serve(site, circuit, p, &check));
             }
             continue;
         }
@@ -71,7 +72,7 @@ pub(super) fn enlarge(
             Some((c, _)) if c == circuit => grew |= grow(c, drafts),
             // A shared run grows once in a pass: the next pass sees what it won.
             Some((c, _)) => return Ok(grow(c, drafts)),
-            None if p.designed() => problems.push(cannot_serve(site, circuit, &check)),
+            None if p.designed() => problems.push(cannot_serve(site, circuit, p, &check)),
             None => {}
         }
     }
@@ -127,16 +128,17 @@ const fn mended_by_size(check: Check) -> bool {
     )
 }
 
-fn cannot_serve(site: &Site, circuit: usize, check: &Checked) -> Problem {
+fn cannot_serve(site: &Site, circuit: usize, planned: &Planned, check: &Checked) -> Problem {
     let (line, name) = site.circuits.get(circuit).map_or((0, ""), |c| (c.line, c.name.as_str()));
-    Problem {
-        line,
-        place: format!("[[circuit]] \"{name}\""),
-        text: format!(
+    let text = match capacity(&planned.run, &planned.positive, None) {
+        // Beyond the tables size does not help.
+        Err(error) if check.outcome == Outcome::NotChecked => error.to_string(),
+        _ => format!(
             "no conductor on offer passes every check; the largest fails: {check}; add larger [[stock.cable]], \
              shorten the run, split the load or raise the voltage"
         ),
-    }
+    };
+    Problem { line, place: format!("[[circuit]] \"{name}\""), text }
 }
 
 /// Where the network collapses: enlarges the designed run of the greatest resistance on the path; `false` where nothing

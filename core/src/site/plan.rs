@@ -99,6 +99,8 @@ pub(super) struct Plan {
     pub trees: Vec<Tree>,
     /// In the order of the document; `None` for a circuit that hangs on no bank.
     pub circuits: Vec<Option<Planned>>,
+    /// Circuits between banks that carry a stated current.
+    pub links: Vec<usize>,
     /// Circuits where the network cannot carry its constant-power loads.
     pub collapsed: Vec<usize>,
 }
@@ -197,7 +199,8 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         } else {
             let mut circuits = planned;
             explain(site, &offers, (&drafts, &tried_out), &flows, &mut circuits);
-            return Ok(Plan { trees, circuits, collapsed: flows.collapsed });
+            let links = graph.links.keys().copied().collect();
+            return Ok(Plan { trees, circuits, links, collapsed: flows.collapsed });
         }
     }
     Err(Problems(

@@ -394,6 +394,15 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
                 .to_string(),
         );
     }
+    if !plan.links.is_empty() {
+        let linked = |c: &CircuitEntry| {
+            plan.links.iter().any(|&l| site.circuits.get(l).is_some_and(|x| x.name == c.name))
+        };
+        lines.push(format!(
+            "stated current in place of what the loads would draw, between banks: {}",
+            names(&linked)
+        ));
+    }
     if site.circuits.iter().any(|c| (c.diversity - 1.0).abs() > f64::EPSILON) {
         lines.push(format!(
             "the user's own diversity: {}",

@@ -235,6 +235,13 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
             j.end_voltage.get::<volt>()
         ),
     )?;
+    if c.collapsed {
+        row(
+            f,
+            "no solution",
+            "the line cannot carry its load: current, drop and volts stand for a constant current",
+        )?;
+    }
     row(f, "governing", &printable(&c.governing))?;
     for (size, why) in &c.refused {
         row(f, "not taken", &format!("{size}: {}", printable(why)))?;

@@ -246,7 +246,12 @@ impl Place<'_> {
             (Some(actual), None) if actual > 0.0 => found.add(
                 Severity::NotChecked, "R7", "device-distance-not-limited", place, line,
                 format!("check not made: {} m of conductor without protection, and the rule set holds no length for this case", digits(actual)),
-                None, "",
+                None,
+                if !self.circuit.sheathed && self.site.rules.unfused_length(true, from_post).is_some() {
+                    "where a sheath or enclosure guards it throughout and nothing combustible is near, state sheathed = true"
+                } else {
+                    ""
+                },
             ),
             // At a board the device sits in the board.
             (None, _) if !from_post => {}
