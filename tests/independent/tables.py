@@ -17,7 +17,7 @@ OPENS = {"class T": 1.35, "blade": 1.35, "molded case": 1.35}
 # Least cross-section, mm²: recalled, as the reports say.
 LEAST = {"us": "14 AWG", "iec": "1.5 mm2", "craft_us": "16 AWG", "craft_iso": "1 mm2"}
 COPPER_20 = 1000 / 58        # Ω·mm²/km, IEC 60028
-CLAD_20 = 27.5               # Ω·mm²/km of copper-clad aluminium, a tenth of the area copper: recalled, and not in the report
+CLAD_20 = 27.5               # Ω·mm²/km of copper-clad aluminium, a tenth copper: recalled, not in the report
 ZERO = 234.5                 # IEC 60028, inferred zero-resistance temperature, sign changed
 
 
