@@ -251,7 +251,7 @@ pub fn pairs() -> Vec<Pair> {
 
 /// A device of a site where the second bank's current is not known, with this breaking capacity.
 ///
-/// The first alone: 4 × 3.4 V (recalled)/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.544 kA.
+/// The first alone: 4 × 3.65 V (recalled)/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.731 kA.
 fn beside_an_unknown_bank(breaking: &str) -> Vec<(Severity, &'static str)> {
     let text = Document::two_banks("chemistry = 'lfp'; nominal = '12.8 V'; internal_resistance = none")
         .with("bank", "chemistry = 'lfp'; nominal = '12.8 V'")
@@ -265,6 +265,6 @@ fn beside_an_unknown_bank(breaking: &str) -> Vec<(Severity, &'static str)> {
 
 #[test]
 fn a_bank_of_unknown_current_leaves_the_known_part_as_a_lower_bound() {
-    assert_eq!(beside_an_unknown_bank("2.5 kA"), [(Danger, "breaking-capacity-too-low")]);
-    assert_eq!(beside_an_unknown_bank("2.6 kA"), [(NotChecked, "breaking-capacity-not-checked")]);
+    assert_eq!(beside_an_unknown_bank("2.7 kA"), [(Danger, "breaking-capacity-too-low")]);
+    assert_eq!(beside_an_unknown_bank("2.8 kA"), [(NotChecked, "breaking-capacity-not-checked")]);
 }

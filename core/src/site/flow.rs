@@ -121,20 +121,24 @@ impl Flows {
             flows.describe(site, tree, bank.nominal.get::<volt>(), highest, &ohms);
             flows.take_faults(site, tree, &banks, wired);
         }
-        let mut drawn = graph.drawn_by_links();
-        let mut volts = flows.take_states(site, graph, &drawn, &ohms);
-        // A stated current above what the loads draw flows to the circuit's end, through all before it.
+        let drawn = graph.drawn_by_links();
+        let mut volts = flows.take_states(site, graph, (&drawn, &drawn), &ohms);
+        // A stated current above what the loads draw flows to the circuit's end, through all before it; at the highest
+        // voltage it is left out, since it would take volts, and so current, from resistive loads.
+        let mut at_low = drawn.clone();
         let mut above_loads = false;
         for (index, (flow, circuit)) in flows.circuits.iter().zip(&site.circuits).enumerate() {
             let (Some(stated), Some(end)) = (circuit.current, flow.end) else { continue };
-            let more = stated.get::<ampere>() - flow.current;
-            if more > 0.0 && !graph.links.contains_key(&index) {
-                *drawn.entry(end).or_insert(0.0) += more;
-                above_loads = true;
+            if graph.links.contains_key(&index) {
+                continue;
             }
+            let stated = stated.get::<ampere>();
+            let low = flow.low_current.unwrap_or(flow.current);
+            *at_low.entry(end).or_insert(0.0) += (stated - low).max(0.0);
+            above_loads |= stated > low;
         }
         if above_loads {
-            volts = flows.take_states(site, graph, &drawn, &ohms);
+            volts = flows.take_states(site, graph, (&at_low, &drawn), &ohms);
         }
         flows.take_links(site, graph, trees, &volts);
         // Stated currents and the user's own diversity.
@@ -169,11 +173,8 @@ impl Flows {
             flow.ohms = ohms(index);
             let above = tree.nodes.get(node.parent).map(|p| p.item);
             flow.at_bank = [above, Some(node.item)].iter().any(|i| matches!(i, Some(Item::Bank(_))));
-            // A cable from a further bank is a feeder of the board it leads to.
-            let consumer = match (node.item, above) {
-                (Item::Bank(_), Some(above)) => above,
-                (item, _) => item,
-            };
+            // A cable from a further bank is a feeder of the board it leads to, whichever way the tree hangs.
+            let consumer = if node.reversed { above.unwrap_or(node.item) } else { node.item };
             match consumer {
                 Item::Load(i) => {
                     if let Some(load) = site.loads.get(i) {
@@ -237,7 +238,7 @@ impl Flows {
         &mut self,
         site: &Site,
         graph: &Graph,
-        drawn: &BTreeMap<Item, f64>,
+        (at_low, at_high): (&BTreeMap<Item, f64>, &BTreeMap<Item, f64>),
         ohms: &impl Fn(usize) -> f64,
     ) -> BTreeMap<Item, f64> {
         let mut volts = BTreeMap::new();
@@ -245,7 +246,8 @@ impl Flows {
         let mut high = low.clone();
         for island in &graph.islands() {
             let Some(first) = root_bank(site, island) else { continue };
-            let solver = Solver { site, drawn, nominal: first.nominal, ohms };
+            let solver = Solver { site, drawn: at_low, nominal: first.nominal, ohms };
+            let solver_high = Solver { drawn: at_high, ..solver };
             for bank in island.nodes.iter().filter_map(|n| match n.item {
                 Item::Bank(bank) => Some(bank),
                 _ => None,
@@ -266,9 +268,9 @@ impl Flows {
                     volts.entry(node.item).or_insert(state.voltage.get::<volt>());
                 }
                 if any_resistive(site)
-                    && let Ok(solved) = solver.solve(&tree, bank.highest)
+                    && let Ok(solved) = solver_high.solve(&tree, bank.highest)
                 {
-                    for state in solver.states(&tree, &solved, bank.highest.get::<volt>()) {
+                    for state in solver_high.states(&tree, &solved, bank.highest.get::<volt>()) {
                         if let Some(list) = high.get_mut(state.circuit) {
                             list.push(state);
                         }

@@ -221,8 +221,10 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
             format!("where there is a protective conductor, at least {} ({})", least.value, least.citation);
         row(f, "protective", &words)?;
     }
-    let least = j
-        .least_fault
+    let devices = c.devices.iter().filter_map(|d| d.least_fault);
+    let least = devices
+        .chain(j.least_fault)
+        .reduce(|a, b| if b < a { b } else { a })
         .map_or_else(|| "not known".to_string(), |a| format!("{} A", rounded(a.get::<ampere>())));
     row(
         f,
