@@ -105,7 +105,6 @@ pub mod law;
 pub mod battery;
 pub mod cable;
 pub mod device;
-pub mod load;
 // Floor 3
 pub mod rules;
 // Floor 4

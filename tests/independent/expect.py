@@ -65,7 +65,7 @@ class Expectation:
         parts = [(self.network.draw(n, volts[n], None), self.network.loads[n].get("continuous", True))
                  for n in self.served() if n in volts]
         links = sum(value(link.keys["current"]) for link in self.network.links
-                    if any(self.circuit in list(self.network.path(r, e)) for r in self.network.banks for e in link.ends))
+                    if any(self.circuit in self.network.path(r, e) for r in self.network.banks for e in link.ends))
         total = sum(p[0] for p in parts) + links
         return (sum(amps for amps, hours in parts if hours) + links) / total
 
@@ -73,7 +73,7 @@ class Expectation:
         """Current that the device has to carry, by rule set and family."""
         if self.circuit.rules == "us":
             return self.amps + 0.25 * self.hours
-        if self.circuit.family and self.circuit.family not in ("gG",) and not self.circuit.family.startswith("miniature"):
+        if not (self.circuit.family or "gG").startswith(("gG", "miniature")):       # carries 80 % for hours: R5
             return self.hours / 0.8 + self.amps - self.hours
         return self.amps
 

@@ -7,7 +7,7 @@ from tables import (COPPER_20, OPENS, area, at, base_ampacity, cell, factors, pe
 
 WAYS = {"in conduit": "conduit", "in a loom": "loom", "clipped to a surface": "clipped",
         "cable in conduit": "cable_in_conduit", "in a duct in the ground": "duct"}
-# Air of an engine space that the factor of the set stands for (tests/reference/ampacity.toml); not in the report.
+# Air of an engine space that the factor of the set stands for (tests/reference/ampacity.toml), not printed.
 ENGINE_AIR = {"craft_us": 50, "craft_iso": 60}
 
 
@@ -32,8 +32,9 @@ class Circuit:
         self.rating = self.devices[0]["rating"] if self.devices else None
         lugs = sum(j.get("count", 1) for j in keys.get("joint", [])) or 4
         self.fixed = lugs * assumed.lug_ohm
-        self.fixed += sum(value(p["resistance"]) if "resistance" in p else assumed.part_V[p["kind"]] / value(p["rating"])
-                          for p in keys.get("part", []))
+        for part in keys.get("part", []):
+            generic = "resistance" not in part
+            self.fixed += assumed.part_V[part["kind"]] / value(part["rating"]) if generic else value(part["resistance"])
         for device in self.devices:
             breaker = device["family"].startswith(("miniature", "molded"))
             self.fixed += device["poles"] * (assumed.breaker_V if breaker else assumed.fuse_V) / device["rating"]

@@ -56,7 +56,6 @@ class Assumptions:
         self.installed = {}
         for way, names in re.findall(r"- installed as (.+?): (.*)", text):
             self.installed |= dict.fromkeys(names.split(", "), way)
-        self.flat = text
 
 
 def device(line):

@@ -1,4 +1,8 @@
-"""Reference tables, values with units, and what a conductor of a size is and carries."""
+"""Reference tables, values with units, and what a conductor of a size is and carries.
+
+What neither the reference nor the report holds is marked recalled; each such value is a figure that the reader of a
+report cannot redo from it.
+"""
 
 import functools
 import math
@@ -13,7 +17,7 @@ OPENS = {"class T": 1.35, "blade": 1.35, "molded case": 1.35}
 # Least cross-section, mm²: recalled, as the reports say.
 LEAST = {"us": "14 AWG", "iec": "1.5 mm2", "craft_us": "16 AWG", "craft_iso": "1 mm2"}
 COPPER_20 = 1000 / 58        # Ω·mm²/km, IEC 60028
-CLAD_20 = 27.5               # Ω·mm²/km of copper-clad aluminium, a tenth of the area copper: recalled
+CLAD_20 = 27.5               # Ω·mm²/km of copper-clad aluminium, a tenth copper: recalled, not in the report
 ZERO = 234.5                 # IEC 60028, inferred zero-resistance temperature, sign changed
 
 

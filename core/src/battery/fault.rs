@@ -206,9 +206,13 @@ pub const fn fault_voltage(chemistry: Chemistry) -> FaultVoltage {
         Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel => FaultVoltage {
             greatest_V: 2.2,
             least_V: 1.98,
-            citation: Citation::new("low-voltage DC distribution guide", "short-circuit chapter", Seen::Page),
+            citation: Citation::new(
+                "low-voltage DC distribution guide; battery council table",
+                "2.2 V full; 1.98 V empty",
+                Seen::Page,
+            ),
         },
-        Chemistry::Lfp => FaultVoltage { greatest_V: 3.4, least_V: 2.5, citation: recalled },
+        Chemistry::Lfp => FaultVoltage { greatest_V: 3.65, least_V: 2.5, citation: recalled },
         Chemistry::Nmc => FaultVoltage { greatest_V: 4.2, least_V: 3.0, citation: recalled },
         Chemistry::NickelCadmium => FaultVoltage { greatest_V: 1.45, least_V: 1.0, citation: recalled },
     }

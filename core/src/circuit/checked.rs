@@ -161,7 +161,7 @@ pub fn bound(amps: f64) -> f64 {
 
 impl fmt::Display for Checked {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if self.check == Check::DeviceProtects {
+        if self.check == Check::DeviceProtects && self.outcome != Outcome::NotChecked {
             f.write_str("device against its conductor, ")?;
         }
         match (self.relation, self.outcome) {

@@ -13,7 +13,7 @@ use crate::device::{Polarity, Supply};
 use crate::error::Error;
 use crate::protection::{Earthing, Guard, least_rating};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
-use crate::rules::{Ampacity, Check, Key};
+use crate::rules::{Ampacity, Check, DeviceLimit, Key};
 
 /// Where a rule comes from that is this library's own (`R` numbers of its design).
 const fn own(place: &'static str) -> Citation {
@@ -26,6 +26,12 @@ const ADIABATIC_IEC: Citation = Citation::new("IEC 60364-4-43:2008", "434.5.2, T
 /// The same law for the sets that print no k: heat of the fault kept in the metal.
 const ADIABATIC_LAW: Citation =
     Citation::new("adiabatic law", "k of the metal between rating and short-circuit limit", Seen::Derived);
+/// A greatest fault current from capacity alone is known to a factor at best: nothing conforms by it.
+const BY_THUMB: Citation = Citation::new(
+    "common practice, no source",
+    "fault current from capacity by rule of thumb",
+    Seen::Practice,
+);
 /// Longest opening time of an instantaneous trip, s.
 const INSTANTANEOUS_S: f64 = 0.1;
 const INSTANTANEOUS: Citation =
@@ -117,12 +123,22 @@ impl Facts<'_> {
                 need.get::<ampere>(),
                 cell.value,
                 "A",
-                match column {
-                    "60 °C" => "1.25 × continuous + rest, 60 °C column of the terminal",
-                    "75 °C" => "1.25 × continuous + rest, 75 °C column of the terminal",
-                    _ => "1.25 × continuous + rest, terminal's column",
+                match (column, self.run.rules.continuous_factor().value == 1.25) {
+                    ("60 °C", true) => "1.25 × continuous + rest, 60 °C column of the terminal",
+                    ("75 °C", true) => "1.25 × continuous + rest, 75 °C column of the terminal",
+                    ("60 °C", false) => {
+                        "the user's factor × continuous + rest, 60 °C column of the terminal"
+                    }
+                    ("75 °C", false) => {
+                        "the user's factor × continuous + rest, 75 °C column of the terminal"
+                    }
+                    _ => "factored current, terminal's column",
                 },
-                cell.citation,
+                // Without a mark the column itself is a rule's choice.
+                match (self.marked_degC(), self.run.rules.set().terminal) {
+                    (None, Some(rule)) => rule.citation,
+                    _ => cell.citation,
+                },
             )),
             Err(error) => Some(not_tabulated(Check::TerminalColumn, "terminal's column", error)),
         }
@@ -158,8 +174,10 @@ impl Facts<'_> {
             device.rating.get::<ampere>(),
             need.get::<ampere>(),
             "A",
-            if factor.value > 1.0 && !device.full_rated {
+            if factor.value == 1.25 && !device.full_rated {
                 "rating of the device against 1.25 × continuous + rest"
+            } else if factor.value > 1.0 && !device.full_rated {
+                "rating of the device against the user's factor × continuous + rest"
             } else if device.full_rated || in_full >= 1.0 {
                 "rating of the device, which is made to carry all of it for hours, against the design current"
             } else {
@@ -216,26 +234,25 @@ impl Facts<'_> {
         }
         Some(match self.ampacity {
             Ok(ampacity) => {
-                // Where the terminal's column admits less than the derated conductor, the device guards the terminal.
-                let column = self
-                    .run
-                    .rules
-                    .terminal_column(self.thinner.size, self.factored(), self.marked_degC())
-                    .ok()
-                    .flatten()
-                    .map(|(cell, _)| ElectricCurrent::new::<ampere>(cell.value));
-                let least = column.filter(|c| *c < ampacity.corrected).unwrap_or(ampacity.corrected);
-                let limit = self.run.rules.device_limit(self.thinner.size, least);
-                let mut citation = limit.citation;
-                if worst_citation(ampacity).seen == Seen::Recalled {
-                    citation = citation.recalled();
-                }
+                let (limit, by_terminal) = self.device_limit(ampacity);
+                let citation = match worst_citation(ampacity) {
+                    recalled if recalled.seen == Seen::Recalled => recalled,
+                    _ => limit.citation,
+                };
                 Checked::at_most(
                     Check::DeviceProtects,
                     device.rating.get::<ampere>(),
                     limit.most.get::<ampere>(),
                     "A",
-                    limit.rule,
+                    match (by_terminal, limit.rule) {
+                        (true, "next standard rating above the ampacity") => {
+                            "next standard rating above the terminal's column"
+                        }
+                        (true, "standard rating not above the ampacity") => {
+                            "standard rating not above the terminal's column"
+                        }
+                        (_, rule) => rule,
+                    },
                     citation,
                 )
             }
@@ -243,6 +260,21 @@ impl Facts<'_> {
                 not_tabulated(Check::DeviceProtects, "device against the conductor's table", *error)
             }
         })
+    }
+
+    /// Greatest device on this conductor, and whether the terminal's column decides: where it admits less than the
+    /// derated conductor, the device guards the terminal.
+    pub fn device_limit(&self, ampacity: &Ampacity) -> (DeviceLimit, bool) {
+        let column = self
+            .run
+            .rules
+            .terminal_column(self.thinner.size, self.factored(), self.marked_degC())
+            .ok()
+            .flatten()
+            .map(|(cell, _)| ElectricCurrent::new::<ampere>(cell.value));
+        let lesser = column.filter(|c| *c < ampacity.corrected);
+        let limit = self.run.rules.device_limit(self.thinner.size, lesser.unwrap_or(ampacity.corrected));
+        (limit, lesser.is_some())
     }
 
     /// R5: families whose upper conventional current lies above 1.45 × rating; under `iec` every family.
@@ -267,7 +299,9 @@ impl Facts<'_> {
         if self.run.rules.set().key != Key::Iec && times <= limit.value {
             return None;
         }
-        let ampacity = self.ampacity.as_ref().ok()?;
+        let Ok(ampacity) = self.ampacity else {
+            return Some(Checked::plain(Check::OpensLate, Outcome::NotChecked, what, limit.citation));
+        };
         Some(Checked::at_most(
             Check::OpensLate,
             times * device.rating.get::<ampere>(),
@@ -326,6 +360,14 @@ impl Facts<'_> {
             "interrupting rating against the greatest prospective current",
             "breaking capacity against the greatest prospective current",
         );
+        if device.supply == Supply::AcOnly {
+            return Some(Checked::plain(
+                Check::Breaking,
+                Outcome::NotChecked,
+                "what it breaks is stated for AC, not for DC",
+                own("R6"),
+            ));
+        }
         Some(match (device.breaking, self.run.greatest_fault) {
             (Some(breaking), Some(fault)) => Checked::at_least(
                 Check::Breaking,
@@ -333,7 +375,7 @@ impl Facts<'_> {
                 fault.get::<ampere>() / 1000.0,
                 "kA",
                 what,
-                own("R6"),
+                if self.run.fault_by_thumb { BY_THUMB } else { own("R6") },
             ),
             (Some(breaking), None) if self.run.fault_floor.is_some_and(|floor| breaking < floor) => {
                 Checked::at_least(
@@ -406,6 +448,11 @@ impl Facts<'_> {
         };
         let bearable = k.value * k.value * area * area;
         let amps = fault.get::<ampere>();
+        if device.supply == Supply::AcOnly {
+            return missing(
+                "withstand of the conductor: what the device lets through is stated for AC, not for DC",
+            );
+        }
         if let Some(stated) = guard.let_through_A2s {
             return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, adiabatic));
         }

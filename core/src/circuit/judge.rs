@@ -16,7 +16,7 @@ use crate::protection::Guard;
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio, ThermodynamicTemperature,
 };
-use crate::rules::{Ampacity, AmpacityQuery, Check, Key, Space};
+use crate::rules::{Ampacity, AmpacityQuery, Check, DeviceLimit, Key, Space};
 
 /// Everything found about one run.
 #[derive(Clone, Debug, PartialEq)]
@@ -44,6 +44,8 @@ pub struct Judgement {
     pub loss: Power,
     /// Least prospective current at the far end, where the source is known.
     pub least_fault: Option<ElectricCurrent>,
+    /// Greatest device on this conductor, where its ampacity is tabulated.
+    pub device_limit: Option<DeviceLimit>,
     /// The checks, in the rule set's order.
     pub checks: ArrayVec<Checked, 24>,
 }
@@ -141,8 +143,13 @@ pub fn judge(
         end_voltage,
         loss: current * current * resistance,
         least_fault,
+        device_limit: None,
         checks: ArrayVec::new(),
     };
+    if let Ok(ampacity) = &ampacity {
+        let facts = Facts { run, thinner, guard, ampacity: &Err(OTHER_METALS), current, continuous };
+        judged.device_limit = Some(facts.device_limit(ampacity).0);
+    }
     for &check in run.rules.set().order {
         let mut push = |checked: Option<Checked>| {
             if let Some(checked) = checked {

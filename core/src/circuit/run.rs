@@ -89,6 +89,8 @@ pub struct Run {
     pub greatest_fault: Option<ElectricCurrent>,
     /// Where the greatest is not known: the part of it that is, a lower bound.
     pub fault_floor: Option<ElectricCurrent>,
+    /// The fault currents rest on a rule of thumb from capacity.
+    pub fault_by_thumb: bool,
     /// The source behind the run's beginning at its weakest; `None` where not known.
     pub weakest_source: Option<Source>,
 }
@@ -140,6 +142,7 @@ impl Run {
             resistance_before: ElectricalResistance::new::<ohm>(0.0),
             greatest_fault: None,
             fault_floor: None,
+            fault_by_thumb: false,
             weakest_source: None,
         }
     }

@@ -110,7 +110,10 @@ impl Family {
 
     /// Conventional currents at a rating, with their source; `None` where none are held for it.
     pub fn conventional(self, rating: ElectricCurrent) -> Option<&'static Band> {
-        band_of(self.data().conventional, rating.get::<ampere>())
+        let amperes = rating.get::<ampere>();
+        // Beyond the largest rating the family is made in, its standard says nothing.
+        let largest = self.ratings_A().last().copied().unwrap_or(f64::MAX);
+        band_of(self.data().conventional, amperes).filter(|_| amperes <= largest)
     }
 
     /// Upper conventional current (it has operated within the conventional time), × rating.

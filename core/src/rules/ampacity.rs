@@ -178,7 +178,13 @@ impl Rules {
                         remedy: "state the temperature inside the conduit as ambient, and an ordinary space",
                     });
                 };
-                ambient_factor(placement, "ambient above a roof", ambient + adder.value, column)
+                let factor =
+                    ambient_factor(placement, "ambient above a roof", ambient + adder.value, column)?;
+                // The weaker of the two sources marks the factor.
+                Ok(factor.map(|f| match adder.citation.seen {
+                    Seen::Page => f,
+                    _ => Factor { citation: f.citation.recalled(), ..f },
+                }))
             }
             Space::Engine => self.engine_factor(placement, ambient, column),
         }

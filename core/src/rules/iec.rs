@@ -140,9 +140,14 @@ pub(super) static SET: RuleSet = RuleSet {
     // or enclosure throughout is taken for the first; without one the check is not made.
     unfused: UnfusedRule { plain: None, sheathed: UNFUSED, sheathed_from_post: UNFUSED },
     drop: DropRule {
+        // The table knows lighting and other uses; the stricter row for these uses is practice.
         critical: Limit {
             value: 0.03,
-            citation: wiring("Table G.52.1, public supply, lighting", Seen::Recalled),
+            citation: Citation::new(
+                "common practice, no source",
+                "3 % as Table G.52.1 for lighting",
+                Seen::Practice,
+            ),
         },
         lighting: Limit {
             value: 0.03,

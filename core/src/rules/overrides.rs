@@ -78,7 +78,7 @@ impl Overrides {
         for (name, value, unit, allowed) in [
             ("continuous_factor", self.continuous_factor, "", CONTINUOUS_FACTOR),
             ("drop", self.drop.map(|d| d.get::<ratio>()), "", DROP),
-            ("unfused", self.unfused.map(|l| l.get::<meter>()), "m", UNFUSED),
+            ("unfused_length", self.unfused.map(|l| l.get::<meter>()), "m", UNFUSED),
             ("engine_space", self.engine_space, "", FACTOR),
             ("bundling", self.bundling, "", FACTOR),
             ("device_ratio", self.device_ratio, "", DEVICE_RATIO),
@@ -100,7 +100,7 @@ impl Overrides {
         [
             number("continuous_factor", self.continuous_factor, ""),
             number("drop", self.drop.map(|d| d.get::<ratio>()), ""),
-            number("unfused", self.unfused.map(|l| l.get::<meter>()), "m"),
+            number("unfused_length", self.unfused.map(|l| l.get::<meter>()), "m"),
             number("engine_space", self.engine_space, ""),
             number("bundling", self.bundling, ""),
             number("device_ratio", self.device_ratio, ""),

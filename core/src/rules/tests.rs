@@ -324,7 +324,7 @@ fn overrides_replace_and_are_listed() {
             [
                 "continuous_factor = 1.1",
                 "drop = 0.02",
-                "unfused = 0.5 m",
+                "unfused_length = 0.5 m",
                 "engine_space = 0.7",
                 "bundling = 0.9",
                 "device_ratio = 0.8",
@@ -335,7 +335,7 @@ fn overrides_replace_and_are_listed() {
     let bad = Overrides { unfused: Some(Length::new::<meter>(-1.0)), ..Overrides::default() };
     assert_eq!(
         rules("us").with_overrides(bad).unwrap_err().to_string(),
-        "unfused is -1 m; it must be greater than 0 and at most 10"
+        "unfused_length is -1 m; it must be greater than 0 and at most 10"
     );
 }
 

@@ -72,8 +72,13 @@ impl Flows {
             .filter(|n| matches!(n.item, Item::Bank(_)) && !unknown(|e| e.weakest))
             .filter_map(|n| run(|e| e.weakest, Some(n.item), &|c| loop_ohms(site, wired, c, None)))
             .collect();
+        let by_thumb = tree.nodes.iter().any(|n| match n.item {
+            Item::Bank(i) => banks.get(i).is_some_and(|e| e.by_thumb),
+            _ => false,
+        });
         for (index, node) in tree.nodes.iter().enumerate() {
             let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+            flow.fault_by_thumb = by_thumb;
             if let Some(state) = strongest.as_ref().and_then(|s| s.get(index)) {
                 flow.fault_at_beginning = Fault::of(state.duty_at_beginning(), complete);
                 flow.fault_at_end = Fault::of(state.duty_at_end(), complete);

@@ -7,20 +7,17 @@ use alloc::vec::Vec;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::electrical_resistance::ohm;
-use uom::si::power::watt;
-use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::fault::Fault;
 use super::graph::{Graph, Item, Tree, path_to};
 use super::model::{BankEntry, LoadKind, Return, Site};
 use super::plan::sources;
+use super::state::{Solver, State};
 use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
-use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
-use crate::quantity::{
-    ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, ThermodynamicTemperature,
-};
+use crate::network::Source;
+use crate::quantity::{ElectricalResistance, Length, ThermodynamicTemperature};
 use crate::rules::LoadUse;
 
 /// What flows in one circuit.
@@ -52,6 +49,8 @@ pub(super) struct Flow {
     /// Greatest prospective current just behind the beginning, and from the far side at the end.
     pub fault_at_beginning: Option<Fault>,
     pub fault_at_end: Option<Fault>,
+    /// One of the banks has no stated fault current.
+    pub fault_by_thumb: bool,
     /// Weakest sources at both ends.
     pub weakest_at_beginning: Option<Source>,
     pub weakest_at_end: Option<Source>,
@@ -59,6 +58,8 @@ pub(super) struct Flow {
     pub start: Option<f64>,
     /// Loop resistance from the source to the circuit's beginning, ohm.
     pub ohms_before: f64,
+    /// What stands at its end, seen from the source.
+    pub end: Option<Item>,
 }
 
 /// Conductors, positive and negative, and joints of a circuit.
@@ -120,40 +121,22 @@ impl Flows {
             flows.describe(site, tree, bank.nominal.get::<volt>(), highest, &ohms);
             flows.take_faults(site, tree, &banks, wired);
         }
-        let links = graph.drawn_by_links();
-        let mut volts = BTreeMap::new();
-        for tree in &graph.islands() {
-            let Some(bank) = root_bank(site, tree) else { continue };
-            let solver = Solver { site, links: &links, nominal: bank.nominal, ohms: &ohms };
-            let low = solver.solve(tree, bank.cut_off).unwrap_or_else(|error| {
-                flows.note_collapse(tree, error);
-                solver.linear(tree, bank.cut_off)
-            });
-            flows.take(site, &links, tree, &low, bank.cut_off.get::<volt>());
-            volts.extend(tree.nodes.iter().zip(&low).map(|(n, s)| (n.item, s.voltage.get::<volt>())));
-            if any_resistive(site)
-                && let Ok(high) = solver.solve(tree, bank.highest)
-            {
-                flows.take_highest(tree, &high);
+        let mut drawn = graph.drawn_by_links();
+        let mut volts = flows.take_states(site, graph, &drawn, &ohms);
+        // A stated current above what the loads draw flows to the circuit's end, through all before it.
+        let mut above_loads = false;
+        for (index, (flow, circuit)) in flows.circuits.iter().zip(&site.circuits).enumerate() {
+            let (Some(stated), Some(end)) = (circuit.current, flow.end) else { continue };
+            let more = stated.get::<ampere>() - flow.current;
+            if more > 0.0 && !graph.links.contains_key(&index) {
+                *drawn.entry(end).or_insert(0.0) += more;
+                above_loads = true;
             }
-            // Each further bank may have to feed the whole island alone.
-            for other in tree.nodes.iter().skip(1).filter_map(|n| match n.item {
-                Item::Bank(other) => Some(other),
-                _ => None,
-            }) {
-                let (Some(turned), Some(bank)) = (graph.island_from(other), site.banks.get(other)) else {
-                    continue;
-                };
-                let solved = solver
-                    .solve(&turned, bank.cut_off)
-                    .unwrap_or_else(|_| solver.linear(&turned, bank.cut_off));
-                flows.take(site, &links, &turned, &solved, bank.cut_off.get::<volt>());
-            }
+        }
+        if above_loads {
+            volts = flows.take_states(site, graph, &drawn, &ohms);
         }
         flows.take_links(site, graph, trees, &volts);
-        for flow in flows.circuits.iter_mut().filter(|f| !f.beginning.is_finite()) {
-            flow.beginning = flow.nominal;
-        }
         // Stated currents and the user's own diversity.
         for (flow, circuit) in flows.circuits.iter_mut().zip(&site.circuits) {
             // The user's own diversity cannot undo the largest single load.
@@ -186,7 +169,12 @@ impl Flows {
             flow.ohms = ohms(index);
             let above = tree.nodes.get(node.parent).map(|p| p.item);
             flow.at_bank = [above, Some(node.item)].iter().any(|i| matches!(i, Some(Item::Bank(_))));
-            match node.item {
+            // A cable from a further bank is a feeder of the board it leads to.
+            let consumer = match (node.item, above) {
+                (Item::Bank(_), Some(above)) => above,
+                (item, _) => item,
+            };
+            match consumer {
                 Item::Load(i) => {
                     if let Some(load) = site.loads.get(i) {
                         flow.usage = load.usage;
@@ -242,64 +230,88 @@ impl Flows {
         }
     }
 
-    /// Takes one state of the network for every circuit that carries more in it than in those before; where two carry
-    /// the same, the one with the lower voltage. Current, share, voltages and start of a circuit belong to one state.
-    fn take(
+    /// Solves every island with each of its banks alone, at cut-off and at its highest voltage, and takes for each
+    /// circuit the greatest current, and the voltages of the state in which its end stands lowest. Returns the
+    /// voltages at the items with the first bank of their island.
+    fn take_states(
         &mut self,
         site: &Site,
-        links: &BTreeMap<Item, f64>,
-        tree: &Tree,
-        states: &[NodeState],
-        emf: f64,
-    ) {
-        let long = continuous_currents(site, links, tree, states);
-        let single = single_currents(site, tree, states);
-        let mut path_ohms = vec![0.0; tree.nodes.len()];
-        for (index, node) in tree.nodes.iter().enumerate() {
-            let Some(circuit) = node.circuit else { continue };
-            let above = states.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
-            let amps = states.get(index).map_or(0.0, |s| libm::fabs(s.current.get::<ampere>()));
-            let upstream = path_ohms.get(node.parent).copied().unwrap_or(0.0);
-            let Some(flow) = self.circuits.get_mut(circuit) else { continue };
-            if let Some(own) = path_ohms.get_mut(index) {
-                *own = upstream + flow.ohms;
-            }
-            let same = libm::fabs(amps - flow.current) <= 1e-9 * amps;
-            // A collapsed network may fall below zero here; a run begins at some positive voltage.
-            let beginning = above.max(0.01 * emf);
-            if (same && beginning >= flow.beginning) || (!same && amps < flow.current) {
-                continue;
-            }
-            if let Some(slot) = self.before.get_mut(circuit) {
-                *slot = tree.nodes.get(node.parent).and_then(|p| p.circuit);
-            }
-            flow.current = amps;
-            flow.single = single.get(index).copied().unwrap_or(0.0);
-            flow.continuous_share = match long.get(index) {
-                Some(long) if amps > 0.0 => (long / amps).clamp(0.0, 1.0),
-                _ => 1.0,
-            };
-            flow.beginning = beginning;
-            flow.drop_before = (emf - above).clamp(0.0, emf);
-            flow.ohms_before = upstream;
-            flow.start =
-                start(site, node.item, amps, states.get(index).map_or(emf, |s| s.voltage.get::<volt>()));
-        }
-    }
-
-    /// Resistive loads draw most at the highest voltage: conductor and device are judged for that current, the drop for
-    /// the one of the worst hour.
-    fn take_highest(&mut self, tree: &Tree, states: &[NodeState]) {
-        for (node, state) in tree.nodes.iter().zip(states) {
-            if let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) {
-                let amps = libm::fabs(state.current.get::<ampere>());
-                if amps > flow.current {
-                    flow.low_current.get_or_insert(flow.current);
-                    flow.current = amps;
+        graph: &Graph,
+        drawn: &BTreeMap<Item, f64>,
+        ohms: &impl Fn(usize) -> f64,
+    ) -> BTreeMap<Item, f64> {
+        let mut volts = BTreeMap::new();
+        let mut low: Vec<Vec<State>> = vec![Vec::new(); site.circuits.len()];
+        let mut high = low.clone();
+        for island in &graph.islands() {
+            let Some(first) = root_bank(site, island) else { continue };
+            let solver = Solver { site, drawn, nominal: first.nominal, ohms };
+            for bank in island.nodes.iter().filter_map(|n| match n.item {
+                Item::Bank(bank) => Some(bank),
+                _ => None,
+            }) {
+                let (Some(tree), Some(bank)) = (graph.island_from(bank), site.banks.get(bank)) else {
+                    continue;
+                };
+                let solved = solver.solve(&tree, bank.cut_off).unwrap_or_else(|error| {
+                    self.note_collapse(&tree, error);
+                    solver.linear(&tree, bank.cut_off)
+                });
+                for state in solver.states(&tree, &solved, bank.cut_off.get::<volt>()) {
+                    if let Some(list) = low.get_mut(state.circuit) {
+                        list.push(state);
+                    }
+                }
+                for (node, state) in tree.nodes.iter().zip(&solved) {
+                    volts.entry(node.item).or_insert(state.voltage.get::<volt>());
+                }
+                if any_resistive(site)
+                    && let Ok(solved) = solver.solve(&tree, bank.highest)
+                {
+                    for state in solver.states(&tree, &solved, bank.highest.get::<volt>()) {
+                        if let Some(list) = high.get_mut(state.circuit) {
+                            list.push(state);
+                        }
+                    }
                 }
             }
         }
+        for (index, (low, high)) in low.iter().zip(&high).enumerate() {
+            let Some(flow) = self.circuits.get_mut(index) else { continue };
+            flow.take(low, high);
+            if let (Some(slot), Some(lowest)) = (self.before.get_mut(index), lowest(low)) {
+                *slot = lowest.before;
+            }
+        }
+        volts
     }
+}
+
+impl Flow {
+    fn take(&mut self, low: &[State], high: &[State]) {
+        let greatest = low.iter().chain(high).max_by(|a, b| a.amps.total_cmp(&b.amps));
+        let (Some(greatest), Some(lowest)) = (greatest, lowest(low)) else {
+            self.beginning = self.nominal;
+            return;
+        };
+        self.current = greatest.amps;
+        self.continuous_share =
+            if greatest.amps > 0.0 { (greatest.long / greatest.amps).clamp(0.0, 1.0) } else { 1.0 };
+        self.low_current = (lowest.amps < greatest.amps * (1.0 - 1e-9)).then_some(lowest.amps);
+        self.single = low.iter().chain(high).map(|s| s.single).fold(0.0, f64::max);
+        self.beginning = lowest.beginning;
+        self.drop_before = lowest.drop_before;
+        self.ohms_before = lowest.ohms_before;
+        self.start = lowest.start;
+        self.end = Some(lowest.end);
+    }
+}
+
+/// The state in which a circuit's end stands lowest, of those in which it carries current worth the name: where another
+/// bank feeds, a cable may lie dead beside the current.
+fn lowest(states: &[State]) -> Option<&State> {
+    let most = states.iter().map(|s| s.amps).fold(0.0, f64::max);
+    states.iter().filter(|s| s.amps >= 0.2 * most).min_by(|a, b| a.end_volts.total_cmp(&b.end_volts))
 }
 
 const fn none() -> Flow {
@@ -319,129 +331,13 @@ const fn none() -> Flow {
         load_terminal: None,
         fault_at_beginning: None,
         fault_at_end: None,
+        fault_by_thumb: false,
         weakest_at_beginning: None,
         weakest_at_end: None,
         start: None,
         ohms_before: 0.0,
+        end: None,
     }
-}
-
-/// Current that comes on top while a load starts or an inverter surges, A.
-fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
-    match item {
-        Item::Load(i) => {
-            let load = site.loads.get(i)?;
-            // One of them starts while the rest runs.
-            let running = amps / f64::from(load.count.max(1));
-            Some((load.start?.get::<ampere>() - running).max(0.0))
-        }
-        Item::Inverter(i) => {
-            let inverter = site.inverters.get(i)?;
-            let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
-            Some((surge - amps).max(0.0))
-        }
-        Item::Bank(_) | Item::Board(_) => None,
-    }
-}
-
-/// Current of the largest single load at each node or behind it, A.
-fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
-    let mut largest: Vec<f64> = tree
-        .nodes
-        .iter()
-        .zip(states)
-        .map(|(node, state)| match node.item {
-            Item::Load(i) => {
-                let count = site.loads.get(i).map_or(1, |l| l.count.max(1));
-                state.current.get::<ampere>() / f64::from(count)
-            }
-            Item::Inverter(_) => state.current.get::<ampere>(),
-            Item::Bank(_) | Item::Board(_) => 0.0,
-        })
-        .collect();
-    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
-        let own = largest.get(index).copied().unwrap_or(0.0);
-        if let Some(parent) = largest.get_mut(node.parent) {
-            *parent = parent.max(own);
-        }
-    }
-    largest
-}
-
-/// Currents of loads of three hours or more, summed up to each node, A.
-fn continuous_currents(
-    site: &Site,
-    links: &BTreeMap<Item, f64>,
-    tree: &Tree,
-    states: &[NodeState],
-) -> Vec<f64> {
-    let mut sums: Vec<f64> = tree
-        .nodes
-        .iter()
-        .zip(states)
-        .map(|(node, state)| {
-            // A load ends its branch: all that arrives at it is its own.
-            let own = match node.item {
-                Item::Load(i) if site.loads.get(i).is_some_and(|l| l.continuous) => {
-                    state.current.get::<ampere>()
-                }
-                Item::Inverter(_) => state.current.get::<ampere>(),
-                _ => 0.0,
-            };
-            own + links.get(&node.item).copied().unwrap_or(0.0)
-        })
-        .collect();
-    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
-        let own = sums.get(index).copied().unwrap_or(0.0);
-        if let Some(parent) = sums.get_mut(node.parent) {
-            *parent += own;
-        }
-    }
-    sums
-}
-
-fn any_resistive(site: &Site) -> bool {
-    site.loads.iter().any(|l| l.kind == LoadKind::Resistive)
-}
-
-/// Power of an item at nominal voltage, W.
-fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
-    match item {
-        Item::Load(i) => site.loads.get(i).map_or(0.0, |load| {
-            let each = load.power.map_or_else(
-                || load.current.map_or(0.0, |a| a.get::<ampere>() * nominal),
-                |p| p.get::<watt>(),
-            );
-            each * f64::from(load.count)
-        }),
-        Item::Inverter(i) => site
-            .inverters
-            .get(i)
-            .map_or(0.0, |inverter| inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>()),
-        Item::Bank(_) | Item::Board(_) => 0.0,
-    }
-}
-
-/// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
-fn node_load(
-    site: &Site,
-    item: Item,
-    nominal: ElectricPotential,
-    as_current: Option<ElectricPotential>,
-) -> NodeLoad {
-    let mut node = NodeLoad { reference: nominal, ..NodeLoad::default() };
-    let whole = Power::new::<watt>(nominal_watts(site, item, nominal.get::<volt>()));
-    let kind = match item {
-        Item::Load(i) => site.loads.get(i).map_or(LoadKind::Power, |l| l.kind),
-        _ => LoadKind::Power,
-    };
-    match (kind, as_current) {
-        (LoadKind::Power, Some(at)) => node.current = whole / at,
-        (LoadKind::Power, None) => node.power = whole,
-        (LoadKind::Current, _) => node.current = whole / nominal,
-        (LoadKind::Resistive, _) => node.resistive = whole,
-    }
-    node
 }
 
 fn root_bank<'a>(site: &'a Site, tree: &Tree) -> Option<&'a BankEntry> {
@@ -451,52 +347,8 @@ fn root_bank<'a>(site: &'a Site, tree: &Tree) -> Option<&'a BankEntry> {
     }
 }
 
-/// What the solution of an island needs.
-struct Solver<'a, F> {
-    site: &'a Site,
-    links: &'a BTreeMap<Item, f64>,
-    nominal: ElectricPotential,
-    ohms: &'a F,
-}
-
-impl<F: Fn(usize) -> f64> Solver<'_, F> {
-    fn solve(&self, tree: &Tree, emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
-        self.run(tree, emf, None)
-    }
-
-    /// With constant powers as constant currents: always has a solution, and stands in where there is none.
-    fn linear(&self, tree: &Tree, emf: ElectricPotential) -> Vec<NodeState> {
-        self.run(tree, emf, Some(emf)).unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
-    }
-
-    fn run(
-        &self,
-        tree: &Tree,
-        emf: ElectricPotential,
-        as_current: Option<ElectricPotential>,
-    ) -> Result<Vec<NodeState>, Error> {
-        let nodes: Vec<TreeNode> = tree
-            .nodes
-            .iter()
-            .map(|n| {
-                let mut load = node_load(self.site, n.item, self.nominal, as_current);
-                if let Some(&amps) = self.links.get(&n.item) {
-                    load.current += ElectricCurrent::new::<ampere>(amps);
-                }
-                TreeNode {
-                    parent: n.parent,
-                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, self.ohms)),
-                    load,
-                    source: None,
-                }
-            })
-            .collect();
-        let mut states = vec![NodeState::default(); nodes.len()];
-        // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
-        let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
-        solve(root, &nodes, &mut states)?;
-        Ok(states)
-    }
+fn any_resistive(site: &Site) -> bool {
+    site.loads.iter().any(|l| l.kind == LoadKind::Resistive)
 }
 
 /// Loop of a circuit at a conductor temperature, or at the insulation's rating where none is known yet.

@@ -95,11 +95,7 @@ pub(super) fn add_far_devices(
         if *needed || !p.feeds.to || !p.feeds.from || circuit.no_device || !circuit.devices.is_empty() {
             continue;
         }
-        let limit = p
-            .judgement
-            .ampacity
-            .as_ref()
-            .map_or(0.0, |a| site.rules.device_limit(p.positive.size, a.corrected).most.get::<ampere>());
+        let limit = p.judgement.device_limit.map_or(0.0, |l| l.most.get::<ampere>());
         if passed > limit {
             *needed = true;
             added = true;

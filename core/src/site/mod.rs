@@ -14,6 +14,7 @@ mod reach;
 mod read;
 mod report;
 mod smaller;
+mod state;
 mod text;
 mod wiring;
 

@@ -8,7 +8,7 @@ use uom::si::electric_current::ampere;
 use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::model::{CircuitEntry, DeviceEntry, Pole, Site};
+use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole, Site};
 use super::plan::{Draft, Fitted};
 use super::read::Problem;
 use crate::cable::{
@@ -43,8 +43,8 @@ pub(super) fn complete(stated: &DeviceEntry) -> Option<Guard> {
 
 /// What can be had: from the stock, else standard sizes and plain generic parts.
 pub(super) struct Offers {
-    /// Conductors, smallest first.
-    sizes: Vec<Conductor>,
+    /// Conductors, smallest first, and whether they come in a sheath.
+    sizes: Vec<(Conductor, bool)>,
     devices: Vec<OwnedOffer>,
     generic_devices: bool,
     generic_cables: bool,
@@ -64,34 +64,29 @@ struct OwnedOffer {
 
 impl Offers {
     pub fn new(site: &Site) -> Self {
-        let mut sizes: Vec<Conductor> = site
+        let mut sizes: Vec<(Conductor, bool)> = site
             .stock
             .cables
             .iter()
-            .map(|c| Conductor {
-                size: c.size,
-                material: c.material,
-                class: c.class,
-                coating: c.coating,
-                insulation: c.insulation,
+            .map(|c| {
+                let conductor = Conductor {
+                    size: c.size,
+                    material: c.material,
+                    class: c.class,
+                    coating: c.coating,
+                    insulation: c.insulation,
+                };
+                (conductor, c.sheathed)
             })
             .collect();
         let generic_cables = sizes.is_empty();
         if generic_cables {
-            sizes = site
-                .rules
-                .sizes()
-                .iter()
-                .map(|&size| Conductor {
-                    size,
-                    material: Material::Copper,
-                    class: Class::Flexible,
-                    coating: Coating::Plain,
-                    insulation: site.rules.usual_insulation(),
-                })
-                .collect();
+            // A plain part is bought in a sheath where the circuit asks for one.
+            let insulation = site.rules.usual_insulation();
+            let plain = |&size: &ConductorSize| (Conductor::flexible_copper(size, insulation), true);
+            sizes = site.rules.sizes().iter().map(plain).collect();
         }
-        sizes.sort_by(|a, b| a.size.area_mm2().total_cmp(&b.size.area_mm2()));
+        sizes.sort_by(|a, b| a.0.size.area_mm2().total_cmp(&b.0.size.area_mm2()));
         let mut devices: Vec<OwnedOffer> = site
             .stock
             .devices
@@ -157,7 +152,7 @@ impl Offers {
                     .to_string(),
             });
         };
-        Ok(Draft { positive, negative, offered, sizes, joints: joints(circuit, &[]) })
+        Ok(Draft { positive, negative, offered, sizes, joints: joints(site, circuit, &[]) })
     }
 
     /// Conductors on offer that are what a circuit states of its own, smallest first.
@@ -172,10 +167,11 @@ impl Offers {
             insulation: circuit.insulation.unwrap_or(c.insulation),
             ..*c
         };
+        let sheathed = self.sizes.iter().filter(|(_, sheath)| *sheath || !circuit.sheathed).map(|(c, _)| c);
         if self.generic_cables {
-            return self.sizes.iter().map(wanted).collect();
+            return sheathed.map(wanted).collect();
         }
-        self.sizes.iter().filter(|c| wanted(c) == **c).copied().collect()
+        sheathed.filter(|c| wanted(c) == **c).copied().collect()
     }
 
     /// Whether devices are plain parts to be bought for their place, not ones on the shelf.
@@ -258,7 +254,7 @@ impl Offers {
 }
 
 /// All joints of a circuit: stated ones, else a lug at each of four conductor ends; its parts; its devices as fitted.
-pub(super) fn joints(circuit: &CircuitEntry, fitted: &[Fitted]) -> ElectricalResistance {
+pub(super) fn joints(site: &Site, circuit: &CircuitEntry, fitted: &[Fitted]) -> ElectricalResistance {
     let mut sum = ElectricalResistance::new::<ohm>(0.0);
     if circuit.joints.is_empty() {
         sum += 4.0 * joint_resistance(JointKind::Lug);
@@ -269,9 +265,17 @@ pub(super) fn joints(circuit: &CircuitEntry, fitted: &[Fitted]) -> ElectricalRes
     for part in &circuit.parts {
         sum += part.resistance.unwrap_or_else(|| rated(part.kind.joint(), part.rating));
     }
-    for device in fitted.iter().map(|f| f.guard.device) {
+    for fitted in fitted {
+        let device = fitted.guard.device;
+        // A device in both poles stands in the loop twice.
+        let pole = fitted.entry.and_then(|e| circuit.devices.get(e)).map(|d| d.pole);
+        let poles = match pole {
+            Some(Pole::Both) => 2.0,
+            None if site.earthing == Earthing::Floating => 2.0,
+            Some(Pole::Positive | Pole::Negative) | None => 1.0,
+        };
         let kind = if device.family.data().is_fuse { JointKind::Fuse } else { JointKind::Breaker };
-        sum += rated(kind, Some(device.rating));
+        sum += poles * rated(kind, Some(device.rating));
     }
     sum
 }

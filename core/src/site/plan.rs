@@ -158,7 +158,7 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
             continue;
         }
         for ((draft, circuit), done) in drafts.iter_mut().zip(&site.circuits).zip(&planned) {
-            draft.joints = joints(circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
+            draft.joints = joints(site, circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
         }
         temperatures = planned
             .iter()
@@ -386,6 +386,19 @@ fn judge_one(
             }
         }
     }
+    if circuit.way_back == Return::Chassis(None) {
+        // On an assumed return nothing is known.
+        for checked in &mut judgement.checks {
+            if matches!(
+                checked.check,
+                Check::Drop | Check::LoadVoltage | Check::StartVoltage | Check::LeastFault
+            ) {
+                checked.outcome = Outcome::NotChecked;
+                checked.what =
+                    "the resistance of the chassis as a return is not stated: drop, volts and least fault";
+            }
+        }
+    }
     Ok(Planned {
         positive: draft.positive,
         negative: draft.negative,
@@ -435,6 +448,7 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
         resistance_before: ElectricalResistance::new::<ohm>(flow.ohms_before),
         greatest_fault: Fault::parts(flow.fault_at_beginning).0,
         fault_floor: Fault::parts(flow.fault_at_beginning).1,
+        fault_by_thumb: flow.fault_by_thumb,
         low_current: flow.low_current.map(ElectricCurrent::new::<ampere>),
         weakest_source: flow.weakest_at_beginning,
     }

@@ -281,6 +281,18 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
             .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
             .sum();
         plausible(bank, &place, found);
+        if bank.strings > 2 {
+            found.add(
+                Severity::NotChecked,
+                "R15",
+                "strings-not-checked",
+                place.clone(),
+                bank.line,
+                format!("check not made: how {} parallel strings share, and their own devices", bank.strings),
+                None,
+                "lead equal cables with a device each from every string to a busbar",
+            );
+        }
         let lugs = site.circuits.iter().filter(|c| c.from == bank.name || c.to == bank.name).count();
         if lugs > LUGS as usize {
             found.add(

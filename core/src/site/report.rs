@@ -11,7 +11,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
 use super::graph::Item;
-use super::model::{CircuitEntry, Site};
+use super::model::{CircuitEntry, Return, Site};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
 use super::wiring::{findings, name_of, stud_of};
@@ -20,7 +20,7 @@ use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
 use crate::protection::{Earthing, End, Guard, Pole};
 use crate::quantity::{ConductorSize, ElectricCurrent, Length};
-use crate::rules::practice_figure;
+use crate::rules::{Limit, practice_figure};
 
 /// One device of a circuit.
 #[derive(Clone, Debug)]
@@ -41,6 +41,10 @@ pub struct DeviceLine {
     pub pole: Pole,
     /// Conductor between the source's end and the device, where stated.
     pub from_source: Option<Length>,
+    /// The most the rule set admits of it, where it holds a length.
+    pub distance_limit: Option<Limit<Length>>,
+    /// Least prospective current it must see, where known.
+    pub least_fault: Option<ElectricCurrent>,
     /// Greatest prospective current it must interrupt, where known.
     pub greatest_fault: Option<ElectricCurrent>,
 }
@@ -64,12 +68,16 @@ pub struct CircuitLine {
     pub run: Run,
     /// What was found.
     pub judgement: Judgement,
+    /// The same for each further device; in the order of `devices`, the first left out.
+    pub further: Vec<Judgement>,
     /// Devices; the one at the source's end first.
     pub devices: Vec<DeviceLine>,
     /// Smaller sizes, each with the reason it was not taken.
     pub refused: Vec<(ConductorSize, String)>,
     /// What decided the size, or uses most of its limit where it is stated.
     pub governing: String,
+    /// The chassis carries the return current.
+    pub chassis: bool,
     /// The line cannot carry its load: its figures are those of a constant current.
     pub collapsed: bool,
     /// Name of the circuit whose device guards this one from further up.
@@ -91,6 +99,8 @@ pub struct Purchase {
     pub places: Vec<String>,
     /// Price of all of it, where the stock states one.
     pub price: Option<f64>,
+    /// What lies on the shelf of it, where the stock says so.
+    pub shelf: Option<f64>,
 }
 
 /// The whole report.
@@ -196,9 +206,11 @@ fn line_of(site: &Site, plan: &Plan, index: usize, circuit: &CircuitEntry, plann
         designed: planned.designed(),
         run: planned.run,
         judgement: planned.judgement.clone(),
+        further: planned.further.clone(),
         devices: planned.fitted.iter().map(|f| device_line(site, circuit, planned, f)).collect(),
         refused: planned.refused.iter().map(|r| (r.size, reason(&r.by))).collect(),
         governing,
+        chassis: circuit.way_back != Return::Conductor,
         collapsed: plan.collapsed.contains(&index),
         guarded_by: planned.guarded_by.map(name),
         practice: practice_figure(planned.positive.size, planned.positive.insulation.rating_degC()).map(|p| {
@@ -231,6 +243,15 @@ fn device_line(site: &Site, circuit: &CircuitEntry, planned: &Planned, fitted: &
             (None, Earthing::Floating) => Pole::Both,
         },
         from_source: entry.and_then(|e| e.from_source),
+        distance_limit: {
+            let name = if fitted.end == End::From { &circuit.from } else { &circuit.to };
+            let post = site.banks.iter().any(|b| b.name == *name);
+            site.rules.unfused_length(circuit.sheathed, post)
+        },
+        least_fault: match planned.fitted.iter().position(|f| f.name == fitted.name) {
+            Some(0) | None => planned.judgement.least_fault,
+            Some(place) => planned.further.get(place - 1).and_then(|j| j.least_fault),
+        },
         greatest_fault: Fault::parts(if parent_side {
             planned.flow.fault_at_beginning
         } else {
@@ -273,7 +294,12 @@ fn system(site: &Site) -> Vec<String> {
 /// What to buy for what was designed: conductor by the metre, devices by the piece.
 fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
     let mut list: Vec<Purchase> = Vec::new();
-    let mut add = |amount: f64, unit: &'static str, what: String, place: &str, each: Option<f64>| {
+    let mut add = |amount: f64,
+                   unit: &'static str,
+                   what: String,
+                   place: &str,
+                   each: Option<f64>,
+                   shelf: Option<f64>| {
         let price = each.map(|p| p * amount);
         match list.iter_mut().find(|p| p.what == what && p.unit == unit) {
             Some(line) => {
@@ -283,20 +309,33 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
                 }
                 line.price = line.price.zip(price).map(|(a, b)| a + b);
             }
-            None => list.push(Purchase { amount, unit, what, places: alloc::vec![place.to_string()], price }),
+            None => list.push(Purchase {
+                amount,
+                unit,
+                what,
+                places: alloc::vec![place.to_string()],
+                price,
+                shelf,
+            }),
         }
     };
     for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
         let Some(planned) = planned else { continue };
         if planned.designed() {
             let metres = circuit.positive_length.get::<meter>() + circuit.negative_length.get::<meter>();
-            let price = site
+            let stock = site
                 .stock
                 .cables
                 .iter()
-                .find(|c| c.size == planned.positive.size && c.insulation == planned.positive.insulation)
-                .and_then(|c| c.price);
-            add(metres, "m", super::text::conductor_words(&planned.positive), &circuit.name, price);
+                .find(|c| c.size == planned.positive.size && c.insulation == planned.positive.insulation);
+            add(
+                metres,
+                "m",
+                super::text::conductor_words(&planned.positive),
+                &circuit.name,
+                stock.and_then(|c| c.price),
+                stock.and_then(|c| c.length).map(|l| l.get::<meter>()),
+            );
         }
         for fitted in planned.fitted.iter().filter(|f| f.designed) {
             let device = fitted.guard.device;
@@ -314,6 +353,7 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
                 super::text::device_words(&fitted.guard, fitted.specified),
                 &circuit.name,
                 price,
+                None,
             );
         }
         if planned.designed() {
@@ -337,6 +377,7 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
                         format!("lug {} for {}", stud, planned.positive.size),
                         &circuit.name,
                         price,
+                        None,
                     );
                 }
             }
@@ -381,6 +422,17 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
          with the greater of the stranded table value and 1.16 times the resistance of their area"
             .to_string(),
     );
+    if let Some(rule) = site.rules.set().terminal {
+        let unmarked = names(&|c| c.terminal.is_none());
+        if !unmarked.is_empty() {
+            lines.push(format!(
+                "terminals without mark taken for {} °C up to {} A, {} °C above: {unmarked}",
+                digits(rule.low_degC),
+                digits(rule.upto_A),
+                digits(rule.high_degC)
+            ));
+        }
+    }
     if let Some(usual) = site.rules.unmarked_terminal_degC() {
         let unmarked = names(&|c| c.terminal.is_none());
         if !unmarked.is_empty() {
@@ -423,8 +475,11 @@ fn recalled(circuits: &[CircuitLine]) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
     for circuit in circuits {
         let factors = circuit.judgement.ampacity.iter().flat_map(|a| a.factors.iter().map(|f| f.citation));
-        let checks = circuit.judgement.checks.iter().map(|c| c.citation);
-        for citation in checks.chain(factors).filter(|c| c.seen == Seen::Recalled) {
+        let all = core::iter::once(&circuit.judgement).chain(&circuit.further);
+        let checks = all.flat_map(|j| j.checks.iter().map(|c| c.citation));
+        let distances = circuit.devices.iter().filter(|d| d.from_source.is_some());
+        let distances = distances.filter_map(|d| d.distance_limit.as_ref().map(|l| l.citation));
+        for citation in checks.chain(factors).chain(distances).filter(|c| c.seen == Seen::Recalled) {
             let line = format!("{}, {}", citation.document, citation.place);
             if !lines.contains(&line) {
                 lines.push(line);
@@ -438,6 +493,11 @@ fn not_covered(site: &Site) -> Vec<String> {
     let mut lines = Vec::new();
     for inverter in &site.inverters {
         lines.push(format!("everything beyond the AC terminals of inverter \"{}\"", inverter.name));
+        let surge = if inverter.surge.is_some() { "" } else { "surge (not stated), " };
+        lines.push(format!(
+            "{surge}inrush and pre-charge of inverter \"{}\", and its idle draw",
+            inverter.name
+        ));
     }
     let open: Vec<&str> = site
         .circuits

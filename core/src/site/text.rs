@@ -16,6 +16,7 @@ use super::finding::{Severity, digits};
 use super::report::{CircuitLine, Report};
 use crate::cable::{Class, Coating, Conductor, Material};
 use crate::circuit::{Outcome, bound};
+use crate::citation::Seen;
 use crate::device::{Polarity, Supply};
 use crate::protection::{Guard, Pole};
 use crate::rules::{Check, Installation, Key, Space};
@@ -118,7 +119,11 @@ impl Report {
         for p in &self.purchases {
             let price = p.price.map_or_else(String::new, |x| format!("  {x:.2}"));
             let places = p.places.iter().map(|s| printable(s)).collect::<alloc::vec::Vec<_>>().join(", ");
-            writeln!(f, "  {:>7} {:<4} {}: {places}{price}", digits(p.amount), p.unit, p.what)?;
+            let shelf = match p.shelf {
+                Some(held) if held < p.amount => format!("  (only {} {} on the shelf)", digits(held), p.unit),
+                _ => String::new(),
+            };
+            writeln!(f, "  {:>7} {:<4} {}: {places}{price}{shelf}", digits(p.amount), p.unit, p.what)?;
         }
         Ok(())
     }
@@ -130,6 +135,11 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     writeln!(f, "  {number}  {}: {} – {}", printable(&c.name), printable(&c.from), printable(&c.to))?;
     let other =
         if c.negative == c.positive { String::new() } else { format!(", negative {}", c.negative.size) };
+    let back = if c.chassis {
+        "chassis".to_string()
+    } else {
+        format!("{} m", digits(c.run.negative_length.get::<meter>()))
+    };
     let way = match c.run.space {
         Space::Ordinary => "",
         Space::Engine => ", engine space",
@@ -139,13 +149,12 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         f,
         "conductor",
         &format!(
-            "{}{other}, {}{way}, {} conductors together, {} °C; {} m + {} m; {}",
+            "{}{other}, {}{way}, {} conductors together, {} °C; {} m + {back}; {}",
             conductor_words(&c.positive),
             installation_word(c.run.installation),
             c.run.bundled_conductors,
             digits(c.run.ambient.get::<degree_celsius>()),
             digits(c.run.positive_length.get::<meter>()),
-            digits(c.run.negative_length.get::<meter>()),
             if c.designed { "designed" } else { "stated" }
         ),
     )?;
@@ -235,6 +244,35 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
             j.end_voltage.get::<volt>()
         ),
     )?;
+    for d in &c.devices {
+        if let (Some(actual), Some(limit)) = (d.from_source, d.distance_limit) {
+            let most = limit.value.get::<meter>();
+            let actual = actual.get::<meter>();
+            row(
+                f,
+                if actual <= most { "passed" } else { "FAILED" },
+                &format!(
+                    "conductor between \"{}\" and {}: {} m, at most {} m{} ({})",
+                    printable(&d.at),
+                    printable(&d.name),
+                    digits(actual),
+                    digits(most),
+                    if limit.citation.seen == Seen::Recalled { ": the recalled value; verify" } else { "" },
+                    limit.citation
+                ),
+            )?;
+        }
+    }
+    for (d, judged) in c.devices.iter().skip(1).zip(&c.further) {
+        for checked in judged.checks.iter().filter(|x| is_of_device(x.check)) {
+            let mark = match checked.outcome {
+                Outcome::Passed => "passed",
+                Outcome::Failed => "FAILED",
+                Outcome::NotChecked => "not checked",
+            };
+            row(f, mark, &format!("{}: {checked}", printable(&d.name)))?;
+        }
+    }
     if c.collapsed {
         row(
             f,
@@ -249,7 +287,11 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     for checked in &j.checks {
         let bought = c.devices.first().is_some_and(|d| d.specified)
             && matches!(checked.check, Check::DeviceSupply | Check::Breaking);
+        let advice = checked.check == Check::Drop
+            && c.run.drop.is_none()
+            && !c.run.rules.drop_limit(c.run.usage).required;
         let mark = match checked.outcome {
+            Outcome::Failed if advice => "advice",
             Outcome::Passed if bought => {
                 row(f, "to be bought", &format!("{}: {}", checked.what, checked.numbers()))?;
                 continue;
@@ -261,6 +303,22 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         row(f, mark, &checked.to_string())?;
     }
     Ok(())
+}
+
+/// Checks that concern a device rather than its conductor.
+pub(super) const fn is_of_device(check: Check) -> bool {
+    matches!(
+        check,
+        Check::Breaking
+            | Check::DeviceCarries
+            | Check::DeviceStart
+            | Check::DeviceProtects
+            | Check::DeviceSupply
+            | Check::LeastFault
+            | Check::OpensLate
+            | Check::Termination
+            | Check::Withstand
+    )
 }
 
 fn heading(f: &mut fmt::Formatter<'_>, text: &str) -> fmt::Result {

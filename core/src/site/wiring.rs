@@ -16,7 +16,7 @@ use super::plan::{Fitted, Plan, Planned};
 use super::plant::{banks, boards, consumers};
 use super::reach::Reach;
 use crate::cable::{Stud, joint_resistance, lug_fits};
-use crate::circuit::{Demand, Judgement, Outcome, Run, judge};
+use crate::circuit::{Demand, Judgement, Outcome, Run, capacity, judge};
 use crate::citation::Citation;
 use crate::device::{Polarity, Supply};
 use crate::protection::{End, Pole, PoleFault, pole_fault};
@@ -132,8 +132,8 @@ impl Place<'_> {
     /// The checks of the run itself.
     fn checks(&self, found: &mut Findings) {
         use crate::rules::Check::{
-            Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate, Termination,
-            Withstand,
+            Ampacity, Breaking, DeviceCarries, DeviceProtects, DeviceSupply, LeastFault, OpensLate,
+            Termination, Withstand,
         };
         let of_device = |check| {
             matches!(
@@ -163,7 +163,17 @@ impl Place<'_> {
                 Some(device) if of_device(checked.check) => device.clone(),
                 _ => (self.place(), self.circuit.line),
             };
-            found.0.extend(of_check(checked, &place, line, material, required));
+            let mut finding = of_check(checked, &place, line, material, required);
+            if let Some(finding) = &mut finding
+                && checked.check == Ampacity
+                && checked.outcome == Outcome::NotChecked
+                && !self.is_exempt()
+                && let Err(error) = capacity(&self.planned.run, &self.planned.positive, None)
+            {
+                finding.text = format!("check not made: {error}");
+                finding.source.clear();
+            }
+            found.0.extend(finding);
         }
         for (fitted, judgement) in self.planned.fitted.iter().skip(1).zip(&self.planned.further) {
             let (place, line) = self.of_device(fitted);
@@ -223,7 +233,9 @@ impl Place<'_> {
                     "use a device without polarity",
                 );
             }
-            if let Some(entry) = entry {
+            let feeding =
+                if fitted.end == End::From { self.planned.feeds.from } else { self.planned.feeds.to };
+            if let Some(entry) = entry.filter(|_| feeding) {
                 self.distance(found, fitted.end, entry.from_source.map(|l| l.get::<meter>()), &place, line);
             }
         }
@@ -288,9 +300,7 @@ impl Place<'_> {
                 continue;
             }
             let passed = if far { self.reach.0 } else { self.reach.1 };
-            let limit = self.planned.judgement.ampacity.as_ref().map(|a| {
-                self.site.rules.device_limit(self.planned.positive.size, a.corrected).most.get::<ampere>()
-            });
+            let limit = self.planned.judgement.device_limit.map(|l| l.most.get::<ampere>());
             let text = match limit {
                 _ if passed.is_infinite() => {
                     format!("no device between a source at \"{name}\" or beyond and this circuit")

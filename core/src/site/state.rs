@@ -1,0 +1,254 @@
+//! One state of an island: one bank alone at one voltage, and what each circuit carries in it (R1, R3).
+
+use alloc::collections::BTreeMap;
+use alloc::vec;
+use alloc::vec::Vec;
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::electrical_resistance::ohm;
+use uom::si::power::watt;
+use uom::si::ratio::ratio;
+
+use super::graph::{Item, Tree};
+use super::model::{LoadKind, Site};
+use crate::error::Error;
+use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
+use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power};
+
+/// A circuit in one state of the network.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct State {
+    pub circuit: usize,
+    pub amps: f64,
+    /// Part of it of three hours or more, A.
+    pub long: f64,
+    /// The largest single load behind it, A.
+    pub single: f64,
+    /// Volts at the end on the source's side and at the far end.
+    pub beginning: f64,
+    pub end_volts: f64,
+    /// Drop and loop resistance from the source to its beginning.
+    pub drop_before: f64,
+    pub ohms_before: f64,
+    /// The largest start behind it, A on top.
+    pub start: Option<f64>,
+    /// The circuit before it on the way from the source.
+    pub before: Option<usize>,
+    /// What stands at its far end.
+    pub end: Item,
+}
+
+/// Power of an item at nominal voltage, W.
+fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
+    match item {
+        Item::Load(i) => site.loads.get(i).map_or(0.0, |load| {
+            let each = load.power.map_or_else(
+                || load.current.map_or(0.0, |a| a.get::<ampere>() * nominal),
+                |p| p.get::<watt>(),
+            );
+            each * f64::from(load.count)
+        }),
+        Item::Inverter(i) => site
+            .inverters
+            .get(i)
+            .map_or(0.0, |inverter| inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>()),
+        Item::Bank(_) | Item::Board(_) => 0.0,
+    }
+}
+
+/// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
+fn node_load(
+    site: &Site,
+    item: Item,
+    nominal: ElectricPotential,
+    as_current: Option<ElectricPotential>,
+) -> NodeLoad {
+    let mut node = NodeLoad { reference: nominal, ..NodeLoad::default() };
+    let whole = Power::new::<watt>(nominal_watts(site, item, nominal.get::<volt>()));
+    let kind = match item {
+        Item::Load(i) => site.loads.get(i).map_or(LoadKind::Power, |l| l.kind),
+        _ => LoadKind::Power,
+    };
+    match (kind, as_current) {
+        (LoadKind::Power, Some(at)) => node.current = whole / at,
+        (LoadKind::Power, None) => node.power = whole,
+        (LoadKind::Current, _) => node.current = whole / nominal,
+        (LoadKind::Resistive, _) => node.resistive = whole,
+    }
+    node
+}
+
+/// What the solution of an island needs.
+pub(super) struct Solver<'a, F> {
+    pub site: &'a Site,
+    /// Currents drawn at items beside their loads, A.
+    pub drawn: &'a BTreeMap<Item, f64>,
+    pub nominal: ElectricPotential,
+    /// Loop resistance of each circuit, ohm.
+    pub ohms: &'a F,
+}
+
+impl<F: Fn(usize) -> f64> Solver<'_, F> {
+    pub fn solve(&self, tree: &Tree, emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
+        self.run(tree, emf, None)
+    }
+
+    /// With constant powers as constant currents: always has a solution, and stands in where there is none.
+    pub fn linear(&self, tree: &Tree, emf: ElectricPotential) -> Vec<NodeState> {
+        self.run(tree, emf, Some(emf)).unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
+    }
+
+    fn run(
+        &self,
+        tree: &Tree,
+        emf: ElectricPotential,
+        as_current: Option<ElectricPotential>,
+    ) -> Result<Vec<NodeState>, Error> {
+        let nodes: Vec<TreeNode> = tree
+            .nodes
+            .iter()
+            .map(|n| {
+                let mut load = node_load(self.site, n.item, self.nominal, as_current);
+                if let Some(&amps) = self.drawn.get(&n.item) {
+                    load.current += ElectricCurrent::new::<ampere>(amps);
+                }
+                TreeNode {
+                    parent: n.parent,
+                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, self.ohms)),
+                    load,
+                    source: None,
+                }
+            })
+            .collect();
+        let mut states = vec![NodeState::default(); nodes.len()];
+        // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
+        let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
+        solve(root, &nodes, &mut states)?;
+        Ok(states)
+    }
+
+    /// What each circuit of a solved tree carries and where its ends stand.
+    pub fn states(&self, tree: &Tree, solved: &[NodeState], emf: f64) -> Vec<State> {
+        let site = self.site;
+        let long = continuous_currents(site, self.drawn, tree, solved);
+        let single = single_currents(site, tree, solved);
+        let starts = starts(site, tree, solved);
+        let mut path_ohms = vec![0.0; tree.nodes.len()];
+        let mut states = Vec::with_capacity(tree.nodes.len());
+        for (index, node) in tree.nodes.iter().enumerate() {
+            let (Some(circuit), Some(state)) = (node.circuit, solved.get(index)) else { continue };
+            let above = solved.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
+            let ohms_before = path_ohms.get(node.parent).copied().unwrap_or(0.0);
+            if let Some(own) = path_ohms.get_mut(index) {
+                *own = ohms_before + (self.ohms)(circuit);
+            }
+            states.push(State {
+                circuit,
+                amps: libm::fabs(state.current.get::<ampere>()),
+                long: long.get(index).copied().unwrap_or(0.0),
+                single: single.get(index).copied().unwrap_or(0.0),
+                // A collapsed network may fall below zero here; a run begins at some positive voltage.
+                beginning: above.max(0.01 * emf),
+                end_volts: state.voltage.get::<volt>(),
+                drop_before: (emf - above).clamp(0.0, emf),
+                ohms_before,
+                start: starts.get(index).copied().flatten(),
+                before: tree.nodes.get(node.parent).and_then(|p| p.circuit),
+                end: node.item,
+            });
+        }
+        states
+    }
+}
+
+/// Current that comes on top while a load starts or an inverter surges, A.
+fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
+    match item {
+        Item::Load(i) => {
+            let load = site.loads.get(i)?;
+            // One of them starts while the rest runs.
+            let running = amps / f64::from(load.count.max(1));
+            Some((load.start?.get::<ampere>() - running).max(0.0))
+        }
+        Item::Inverter(i) => {
+            let inverter = site.inverters.get(i)?;
+            let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
+            Some((surge - amps).max(0.0))
+        }
+        Item::Bank(_) | Item::Board(_) => None,
+    }
+}
+
+/// Current of the largest single load at each node or behind it, A.
+fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
+    let mut largest: Vec<f64> = tree
+        .nodes
+        .iter()
+        .zip(states)
+        .map(|(node, state)| match node.item {
+            Item::Load(i) => {
+                let count = site.loads.get(i).map_or(1, |l| l.count.max(1));
+                state.current.get::<ampere>() / f64::from(count)
+            }
+            Item::Inverter(_) => state.current.get::<ampere>(),
+            Item::Bank(_) | Item::Board(_) => 0.0,
+        })
+        .collect();
+    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
+        let own = largest.get(index).copied().unwrap_or(0.0);
+        if let Some(parent) = largest.get_mut(node.parent) {
+            *parent = parent.max(own);
+        }
+    }
+    largest
+}
+
+/// The largest start or surge at each node or behind it, A on top: one at a time (R16).
+fn starts(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<Option<f64>> {
+    let mut largest: Vec<Option<f64>> = tree
+        .nodes
+        .iter()
+        .zip(states)
+        .map(|(n, s)| start(site, n.item, libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>()))
+        .collect();
+    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
+        let own = largest.get(index).copied().flatten();
+        if let (Some(own), Some(parent)) = (own, largest.get_mut(node.parent)) {
+            *parent = Some(parent.map_or(own, |p| p.max(own)));
+        }
+    }
+    largest
+}
+
+/// Currents of loads of three hours or more, summed up to each node, A.
+fn continuous_currents(
+    site: &Site,
+    drawn: &BTreeMap<Item, f64>,
+    tree: &Tree,
+    states: &[NodeState],
+) -> Vec<f64> {
+    let mut sums: Vec<f64> = tree
+        .nodes
+        .iter()
+        .zip(states)
+        .map(|(node, state)| {
+            // A load ends its branch: all that arrives at it is its own.
+            let own = match node.item {
+                Item::Load(i) if site.loads.get(i).is_some_and(|l| l.continuous) => {
+                    state.current.get::<ampere>()
+                }
+                Item::Inverter(_) => state.current.get::<ampere>(),
+                _ => 0.0,
+            };
+            own + drawn.get(&node.item).copied().unwrap_or(0.0)
+        })
+        .collect();
+    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
+        let own = sums.get(index).copied().unwrap_or(0.0);
+        if let Some(parent) = sums.get_mut(node.parent) {
+            *parent += own;
+        }
+    }
+    sums
+}
