@@ -130,6 +130,8 @@ pub mod guide {
     pub mod site_file {}
     #[doc = include_str!("../guide/rule_sets.md")]
     pub mod rule_sets {}
+    #[doc = include_str!("../guide/rules.md")]
+    pub mod rules {}
 }
 
 pub use error::Error;

@@ -7,6 +7,7 @@ mod arrows;
 mod interface;
 mod package;
 mod readme;
+mod slugs;
 mod source;
 mod tree;
 mod versions;
