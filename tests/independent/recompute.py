@@ -55,7 +55,8 @@ def compare(out, site, printed, assumed):
         out.number(name, "current for hours, A", report.amount(amps[2]), ours.hours)
         capacity(out, circuit, said)
         loop = re.match(r"([\d.]+) mΩ with joints, conductor at (\d+) °C; least fault current (\d+) A", said["loop"])
-        out.number(name, "loop, mΩ", report.amount(loop[1]), ours.ohms * 1000)
+        if circuit.material == "copper":
+            out.number(name, "loop, mΩ", report.amount(loop[1]), ours.ohms * 1000)
         out.number(name, "conductor, °C", (float(loop[2]), 0.5), ours.degrees)
         out.number(name, "least fault current, A", report.two_digits(loop[3]), ours.least)
         for device in said["devices"]:
@@ -99,7 +100,7 @@ def volts(out, name, said, ours):
 
 def verdict(out, name, check, ours):
     """Value, limit and verdict of one printed check."""
-    held = ours.check(check.label) if check.actual else None
+    held = ours.check(check.label, check.device) if check.actual else None
     if held is None:
         return
     actual, limit = held
@@ -127,8 +128,9 @@ def smaller(out, site, printed, assumed, finished, circuit):
     out.fact(name, "last size not taken", size, below[-1])
     if size != below[-1]:
         return
-    ratings = {value(r) for d in site["stock"]["device"] if d["family"] == circuit.family for r in d["ratings"]}
-    for rating in sorted(r for r in ratings if r >= circuit.rating):
+    taken = said["devices"][0]
+    ratings = {value(r) for d in site["stock"]["device"] if d["family"] == taken["family"] for r in d["ratings"]}
+    for rating in sorted(r for r in ratings if r >= taken["rating"]):
         devices = [d | {"rating": rating} for d in said["devices"]]
         changed = printed | {name: said | {"size": size, "devices": devices}}
         network = whole(site, changed, assumed)
@@ -136,7 +138,7 @@ def smaller(out, site, printed, assumed, finished, circuit):
             trial = Expectation(network, next(c for c in network.circuits if c.name == name))
         except ArithmeticError:
             break
-        if trial.demand() <= rating:
+        if trial.demand(trial.circuit.devices[0]) <= rating:
             break
     where = reason.path or name
     verdict(out, f"{name}: {size}", reason,
