@@ -142,7 +142,8 @@ class Expectation:
             "greatest conductor": lambda: (area(c.size), area(self.part(device)["terminal_range"][1])),
             "current while it starts": lambda: (
                 value(self.network.loads[self.keys["to"]]["start"]),
-                cell("protection.toml", "iec-60898-3-dc-trip-bands", device["family"][-1], "no_trip") * device["rating"]),
+                cell("protection.toml", "iec-60898-3-dc-trip-bands", device["family"][-1], "no_trip")
+                * device["rating"]),
         }
         if column:
             return self.amps + 0.25 * self.hours, us_ampacity(c.size, self.column())
