@@ -2,6 +2,7 @@
 
 import re
 
+from plant import opens
 from tables import LEAST, area, cell, next_standard, us_ampacity, value, withstand_k
 
 
@@ -18,22 +19,31 @@ class Expectation:
         # Only ways through this circuit count for its far end; a bank may be the far end too.
         self.far = {} if self.is_link else {root: far for root in network.banks
                                             for c, _, far in network.grown(root, network.links) if c is circuit}
+        stated = value(self.keys.get("current", 0))
         if self.is_link:
-            self.amps = self.hours = self.low_amps = value(self.keys["current"])
+            self.amps = self.hours = self.low_amps = stated
         else:
-            worst = max([*low.values(), *high.values()], key=lambda s: s[0][name])
-            self.amps, self.low_amps = worst[0][name], max(s[0][name] for s in low.values())
-            self.hours = self.amps * self.share(worst[1])
+            spared = {root: (frozen or network).spare(root) for root in network.banks}
+            states = [(*low[root], spared[root]) for root in low] + [(*high[root], {}) for root in high]
+            worst = max(states, key=lambda s: s[0][name])
+            self.amps = max(worst[0][name], stated)
+            self.hours = self.amps * self.share(*worst[1:])
         self.degrees = circuit.temperature(self.amps)
         self.ohms = circuit.ohms(self.degrees)
-        ends = [(root, low[root][1][far]) for root, far in self.far.items() if low[root][0][name] > 0]
         if self.is_link:
             near = next(e for e in circuit.ends if e not in network.banks)
             self.path = self.low_amps * self.ohms / network.nominal * 100
             self.end = min(s[1][near] for s in low.values() if near in s[1]) - self.low_amps * self.ohms
         else:
-            self.path = max((value(network.banks[r]["cut_off"]) - end) / network.nominal * 100 for r, end in ends)
-            self.end = min(end for _, end in ends)
+            # Its own drop is that of no less than its stated current, in the state in which its end is lowest.
+            ends = []
+            for root, far in self.far.items():
+                drawn, volts = low[root][0][name], low[root][1][far]
+                if drawn > 0:
+                    amps = max(drawn, stated)
+                    ends.append((volts - (amps - drawn) * self.ohms, amps, value(network.banks[root]["cut_off"])))
+            self.path = max((cut_off - end) / network.nominal * 100 for end, _, cut_off in ends)
+            self.end, self.low_amps, _ = min(ends)
         self.start = None
         if "start" in load:
             self.start = min(network.solve(r, starting=self.keys["to"], frozen=frozen)[1][self.keys["to"]]
@@ -44,36 +54,41 @@ class Expectation:
         guarded = {d["at"] for d in circuit.devices} or {circuit.ends[0]}
         self.greatest = {end: network.greatest(end, circuit) for end in guarded}
         fed = [end for end in guarded if self.fed_from(end)]
-        self.least = min(network.least(end, circuit) for end in fed)
+        self.least_by_end = {end: network.least(end, circuit) for end in fed}
+        self.least = min(self.least_by_end.values())
 
     def fed_from(self, end):
         return end in self.network.banks or any(
             far == end for root in self.network.banks for _, _, far in self.network.grown(root, [self.circuit]))
 
-    def served(self):
-        """Loads that this circuit feeds, from any bank."""
+    def beyond(self):
+        """Nodes that this circuit feeds, from any bank."""
         names = set()
         for root, beyond in self.far.items():
             below = {beyond}
             for _, near, far in self.network.grown(root, self.network.links):
                 below |= {far} if near in below else set()
-            names |= below & set(self.network.loads)
+            names |= below
         return names
 
-    def share(self, volts):
+    def served(self):
+        return self.beyond() & set(self.network.loads)
+
+    def share(self, volts, spare):
         """Share of the current that is drawn for hours."""
         parts = [(self.network.draw(n, volts[n], None), self.network.loads[n].get("continuous", True))
                  for n in self.served() if n in volts]
         links = sum(value(link.keys["current"]) for link in self.network.links
                     if any(self.circuit in self.network.path(r, e) for r in self.network.banks for e in link.ends))
-        total = sum(p[0] for p in parts) + links
-        return (sum(amps for amps, hours in parts if hours) + links) / total
+        steady = links + sum(spare.get(node, 0) for node in self.beyond())
+        total = sum(p[0] for p in parts) + steady
+        return (sum(amps for amps, hours in parts if hours) + steady) / total
 
-    def demand(self):
-        """Current that the device has to carry, by rule set and family."""
+    def demand(self, device):
+        """Current that a device has to carry, by rule set and family."""
         if self.circuit.rules == "us":
             return self.amps + 0.25 * self.hours
-        if not (self.circuit.family or "gG").startswith(("gG", "miniature")):       # carries 80 % for hours: R5
+        if not device["family"].startswith(("gG", "miniature")):       # carries 80 % for hours: R5
             return self.hours / 0.8 + self.amps - self.hours
         return self.amps
 
@@ -102,30 +117,33 @@ class Expectation:
             return 3 if self.uses & {"lighting", "critical"} else 5
         return 3 if feeds_board or self.keys["to"] in self.network.loads and "critical" in self.uses else 10
 
-    def check(self, label):
-        """(actual, limit) that we hold for a printed check; None where there is nothing to recompute."""
+    def check(self, label, other=None):
+        """(actual, limit) that we hold for a printed check of the first device or another; None where there is
+        nothing to recompute."""
         c = self.circuit
+        device = other or next(iter(c.devices), None)
         column = re.search(r"(60|75) °C column", label)
         simple = {
             "mechanical minimum": lambda: (area(c.size), area(LEAST[c.rules])),
             "design current": lambda: (self.amps, c.ampacity),
-            "rating of the device": lambda: (c.rating, self.demand()),
-            "device against its conductor": lambda: (c.rating, self.device_limit()),
-            "current I2 at which": lambda: (c.opens(), 1.45 * c.ampacity),
-            "current at which the device opens": lambda: (c.opens(), 1.45 * c.ampacity),
+            "rating of the device": lambda: (device["rating"], self.demand(device)),
+            "device against its conductor": lambda: (device["rating"], self.device_limit()),
+            "current I2 at which": lambda: (opens(device), 1.45 * c.ampacity),
+            "current at which the device opens": lambda: (opens(device), 1.45 * c.ampacity),
             "voltage drop": lambda: (self.path, self.drop_limit()),
             "voltage at the far end while": lambda: (self.start, value(self.least_supply)),
             "voltage at the far end": lambda: (self.end, value(self.least_supply)),
-            "voltage rating": lambda: (value(self.part()["dc_voltage"]), self.highest()),
-            "breaking capacity": lambda: (value(self.part()["breaking"]), max(self.greatest.values())),
-            "interrupting rating": lambda: (value(self.part()["breaking"]), max(self.greatest.values())),
-            "least prospective": lambda: (self.least, c.opens()),
-            "let-through": lambda: (value(self.part()["let_through"]),
+            "voltage rating": lambda: (value(self.part(device)["dc_voltage"]), self.highest()),
+            "breaking capacity": lambda: (value(self.part(device)["breaking"]), self.greatest[device["at"]]),
+            "interrupting rating": lambda: (value(self.part(device)["breaking"]), self.greatest[device["at"]]),
+            "least prospective": lambda: (self.least_by_end[device["at"]], opens(device)),
+            "let-through": lambda: (value(self.part(device)["let_through"]),
                                     (withstand_k(c.rules, c.insulation, c.compound) * area(c.size)) ** 2),
-            "greatest conductor": lambda: (area(c.size), area(self.part()["terminal_range"][1])),
+            "greatest conductor": lambda: (area(c.size), area(self.part(device)["terminal_range"][1])),
             "current while it starts": lambda: (
                 value(self.network.loads[self.keys["to"]]["start"]),
-                cell("protection.toml", "iec-60898-3-dc-trip-bands", c.family[-1], "no_trip") * c.rating),
+                cell("protection.toml", "iec-60898-3-dc-trip-bands", device["family"][-1], "no_trip")
+                * device["rating"]),
         }
         if column:
             return self.amps + 0.25 * self.hours, us_ampacity(c.size, self.column())
@@ -134,11 +152,13 @@ class Expectation:
     def highest(self):
         return max(value(b["highest"]) for b in self.network.site["bank"])
 
-    def part(self):
+    def part(self, device):
         """The device as the file states it, or the one on the shelf."""
-        return next(iter(stated_devices(self.keys)), None) or next(
+        alike = [d for d in stated_devices(self.keys) if "rating" in d
+                 and (d["family"], value(d["rating"])) == (device["family"], device["rating"])]
+        return next(iter(alike), None) or next(
             d for d in self.network.site["stock"]["device"]
-            if d["family"] == self.circuit.family and self.circuit.rating in map(value, d["ratings"]))
+            if d["family"] == device["family"] and device["rating"] in map(value, d["ratings"]))
 
 
 def stated_devices(keys):

@@ -3,7 +3,8 @@
 import functools
 import re
 
-from tables import (COPPER_20, OPENS, area, at, base_ampacity, cell, factors, per_km_20, table, value)
+from report import NUMBER
+from tables import COPPER_20, OPENS, area, at, base_ampacity, cell, factors, per_km_20, table, value
 
 WAYS = {"in conduit": "conduit", "in a loom": "loom", "clipped to a surface": "clipped",
         "cable in conduit": "cable_in_conduit", "in a duct in the ground": "duct"}
@@ -28,8 +29,7 @@ class Circuit:
         self.coldest = value(site["site"]["ambient"][0])
         self.bundled = keys.get("bundled", 2)
         self.metres = sum(value(keys.get(k, keys.get("one_way"))) for k in ("positive_length", "negative_length"))
-        self.family = self.devices[0]["family"] if self.devices else None
-        self.rating = self.devices[0]["rating"] if self.devices else None
+        self.printed_ohms = float(re.match(NUMBER, printed["loop"])[0]) / 1000
         lugs = sum(j.get("count", 1) for j in keys.get("joint", [])) or 4
         self.fixed = lugs * assumed.lug_ohm
         for part in keys.get("part", []):
@@ -64,21 +64,26 @@ class Circuit:
         return air + (self.insulation - air) * (amps / self.ampacity) ** 2
 
     def ohms(self, temperature):
-        return per_km_20(self.size, self.material, self.coating) / 1000 * self.metres * at(temperature) + self.fixed
+        """No document holds the resistivity of copper-clad aluminium: its loop is the printed one, and not compared."""
+        if self.material != "copper":
+            return self.printed_ohms
+        return per_km_20(self.size, self.coating) / 1000 * self.metres * at(temperature) + self.fixed
 
     def cold_ohms(self):
         """Metal of full area. Copper-clad aluminium is not met on the way of a greatest fault here."""
         return COPPER_20 / area(self.size) / 1000 * self.metres * at(self.coldest)
 
-    def opens(self):
-        if self.family == "gG":
-            rows = table("protection.toml", "iec-60269-gg-conventional")["rows"]
-            row = next(r for r in reversed(rows) if self.rating >= r[0] and (r[0] != 4 or self.rating > 4))
-            return row[3] * self.rating
-        if self.family.startswith("miniature"):
-            return cell("protection.toml", "iec-breaker-conventional-currents", "IEC 60898-1, In ≤ 63 A",
-                        "tripping") * self.rating
-        return OPENS[self.family] * self.rating
+
+def opens(device):
+    """Upper conventional current of a printed device."""
+    family, rating = device["family"], device["rating"]
+    if family == "gG":
+        rows = table("protection.toml", "iec-60269-gg-conventional")["rows"]
+        return next(r for r in reversed(rows) if rating >= r[0] and (r[0] != 4 or rating > 4))[3] * rating
+    if family.startswith("miniature"):
+        return cell("protection.toml", "iec-breaker-conventional-currents", "IEC 60898-1, In ≤ 63 A",
+                    "tripping") * rating
+    return OPENS[family] * rating
 
 
 class Network:
@@ -130,38 +135,53 @@ class Network:
     def solve(self, root, level="cut_off", starting=None, frozen=None):
         """Currents and volts with one bank alone at a level; conductors at the temperature of their greatest current.
 
-        A start is too short to warm a conductor. At cut-off a stated current above that of the loads lowers the
-        volts beyond too. Loads draw what they draw in a `frozen` network, if given.
+        A start is too short to warm a conductor. Loads draw what they draw in a `frozen` network, if given, running.
         """
-        return self.state(root, level, (frozen or self).greatest_amps, starting, frozen)
+        spare = (frozen or self).spare(root) if level == "cut_off" else {}
+        theirs = frozen.solve(root, level)[1] if frozen else None
+        return self.state(root, level, (frozen or self).greatest_amps, spare, starting, theirs)
+
+    def spare(self, root, warming=None):
+        """What stated currents hold beyond the loads at cut-off, by the node that it is drawn at.
+
+        The document leaves open what draws it: taken as constant, for hours and during starts, the difference to what
+        the loads draw without it.
+        """
+        found = {}
+        for circuit, _, far in reversed(self.grown(root, self.links)):
+            if "current" in circuit.keys:
+                drawn = self.state(root, "cut_off", warming or self.greatest_amps, found)[0][circuit.name]
+                found[far] = max(0.0, value(circuit.keys["current"]) - drawn) if drawn else 0.0
+        return found
 
     @functools.cached_property
     def greatest_amps(self):
         """Greatest current of each circuit over all banks and both levels: what warms its conductor."""
         amps = {c.name: value(c.keys.get("current", 0)) for c in self.circuits}
         for _ in range(200):
-            states = [self.state(root, level, amps) for root in self.banks for level in ("cut_off", "highest")]
-            new = {name: max([s[0][name] for s in states]) for name in amps}
-            new |= {c.name: value(c.keys["current"]) for c in self.links}
+            states = [self.state(root, "cut_off", amps, self.spare(root, amps)) for root in self.banks]
+            states += [self.state(root, "highest", amps, {}) for root in self.banks]
+            new = {c.name: max([value(c.keys.get("current", 0)), *(s[0][c.name] for s in states)])
+                   for c in self.circuits}
             if max(abs(new[k] - amps[k]) for k in amps) < 1e-11:
                 break
             amps = new
         return amps
 
-    def state(self, root, level, warming, starting=None, frozen=None):
-        """As `solve`, each conductor at the temperature that its current in `warming` gives it."""
-        theirs = frozen.solve(root, level, starting)[1] if frozen else None
+    def state(self, root, level, warming, spare, starting=None, theirs=None):
+        """As `solve`, each conductor at the temperature that its current in `warming` gives it; `theirs`: volts that
+        tell what loads draw, in place of its own."""
         order = self.grown(root, self.links)
         source = value(self.banks[root][level])
         volts = {far: source for _, _, far in order} | {root: source}
         amps = dict.fromkeys((c.name for c in self.circuits), 0.0)
         for _ in range(500):
-            at_node = {name: self.draw(name, (theirs or volts)[name], starting) for name in volts}
+            at_node = {name: self.draw(name, (theirs or volts)[name], starting) + spare.get(name, 0)
+                       for name in volts}
             new = dict.fromkeys(amps, 0.0)
             for circuit, near, far in reversed(order):
                 at_node[near] += at_node[far]
-                stated = value(circuit.keys.get("current", 0)) if level == "cut_off" and at_node[far] else 0
-                new[circuit.name] = max(at_node[far], stated)
+                new[circuit.name] = at_node[far]
             for circuit, near, far in order:
                 ohms = circuit.ohms(circuit.temperature(warming[circuit.name]))
                 volts[far] = volts[near] - new[circuit.name] * ohms

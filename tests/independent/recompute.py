@@ -55,7 +55,8 @@ def compare(out, site, printed, assumed):
         out.number(name, "current for hours, A", report.amount(amps[2]), ours.hours)
         capacity(out, circuit, said)
         loop = re.match(r"([\d.]+) mΩ with joints, conductor at (\d+) °C; least fault current (\d+) A", said["loop"])
-        out.number(name, "loop, mΩ", report.amount(loop[1]), ours.ohms * 1000)
+        if circuit.material == "copper":
+            out.number(name, "loop, mΩ", report.amount(loop[1]), ours.ohms * 1000)
         out.number(name, "conductor, °C", (float(loop[2]), 0.5), ours.degrees)
         out.number(name, "least fault current, A", report.two_digits(loop[3]), ours.least)
         for device in said["devices"]:
@@ -99,7 +100,7 @@ def volts(out, name, said, ours):
 
 def verdict(out, name, check, ours):
     """Value, limit and verdict of one printed check."""
-    held = ours.check(check.label) if check.actual else None
+    held = ours.check(check.label, check.device) if check.actual else None
     if held is None:
         return
     actual, limit = held
@@ -107,15 +108,18 @@ def verdict(out, name, check, ours):
     out.number(name, check.label[:52], printed(check.actual), actual)
     printed = report.two_digits if check.label.startswith(("breaking", "interrupting")) else report.amount
     out.number(name, f"  at {check.sense}", printed(check.limit), limit)
-    good = actual <= limit * (1 + 1e-9) if check.sense == "most" else actual >= limit * (1 - 1e-9)
-    out.fact(name, "  verdict", check.mark, "passed" if good else "FAILED")
+    out.fact(name, "  verdict", check.mark, "passed" if within(check.sense, *held) else "FAILED")
+
+
+def within(sense, actual, limit):
+    return actual <= limit * (1 + 1e-9) if sense == "most" else actual >= limit * (1 - 1e-9)
 
 
 def smaller(out, site, printed, assumed, finished, circuit):
     """The next smaller size on the shelf must fail in the finished network, and for the printed reason.
 
     The device stays, unless the smaller conductor's greater current asks for the next rating on the shelf. Reasons are
-    printed with the currents of the finished network.
+    printed with the currents of the finished network; a size that would pass with those may still fail with its own.
     """
     name, said = circuit.name, printed[circuit.name]
     shelf = sorted((area(c["size"]), c["size"]) for c in site["stock"]["cable"])
@@ -127,8 +131,9 @@ def smaller(out, site, printed, assumed, finished, circuit):
     out.fact(name, "last size not taken", size, below[-1])
     if size != below[-1]:
         return
-    ratings = {value(r) for d in site["stock"]["device"] if d["family"] == circuit.family for r in d["ratings"]}
-    for rating in sorted(r for r in ratings if r >= circuit.rating):
+    taken = said["devices"][0]
+    ratings = {value(r) for d in site["stock"]["device"] if d["family"] == taken["family"] for r in d["ratings"]}
+    for rating in sorted(r for r in ratings if r >= taken["rating"]):
         devices = [d | {"rating": rating} for d in said["devices"]]
         changed = printed | {name: said | {"size": size, "devices": devices}}
         network = whole(site, changed, assumed)
@@ -136,11 +141,14 @@ def smaller(out, site, printed, assumed, finished, circuit):
             trial = Expectation(network, next(c for c in network.circuits if c.name == name))
         except ArithmeticError:
             break
-        if trial.demand() <= rating:
+        if trial.demand(trial.circuit.devices[0]) <= rating:
             break
-    where = reason.path or name
-    verdict(out, f"{name}: {size}", reason,
-            Expectation(network, next(c for c in network.circuits if c.name == where), finished))
+    where = next(c for c in network.circuits if c.name == (reason.path or name))
+    ours = Expectation(network, where, finished)
+    held = ours.check(reason.label)
+    if held and within(reason.sense, *held):
+        ours = Expectation(network, where)
+    verdict(out, f"{name}: {size}", reason, ours)
 
 
 def shopping(out, site, printed, text):

@@ -26,10 +26,13 @@ def two_digits(text):
 
 
 class Check:
-    """One line: label, value, limit; `path` names another circuit whose check a smaller size fails."""
+    """One line: label, value, limit; `path` names another circuit whose check a smaller size fails, `device` one but
+    the first of its circuit."""
 
-    def __init__(self, mark, line):
+    def __init__(self, mark, line, devices=()):
         self.mark = mark
+        self.device = next((d for d in devices if line.startswith(d["name"] + ": ")), None)
+        line = line.removeprefix(f"{self.device['name']}: ") if self.device else line
         self.path, line = re.match(r'(?:path to "(.*?)": )?(.*)', line).groups()
         found = re.match(r"(.*): (-?[\d.]+ ?\S*), at (most|least) (-?[\d.]+ ?[^\s:]*)(.*)", line)
         self.label = found[1] if found else line
@@ -85,7 +88,7 @@ def circuits(text):
             continue
         mark, rest = body[1], body[2]
         if mark in ("passed", "FAILED"):
-            current["checks"].append(Check(mark, rest))
+            current["checks"].append(Check(mark, rest, current["devices"]))
         elif mark == "not taken":
             size, reason = rest.split(": ", 1)
             current["refused"].append((size, Check("FAILED", reason)))

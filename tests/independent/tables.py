@@ -17,7 +17,6 @@ OPENS = {"class T": 1.35, "blade": 1.35, "molded case": 1.35}
 # Least cross-section, mm²: recalled, as the reports say.
 LEAST = {"us": "14 AWG", "iec": "1.5 mm2", "craft_us": "16 AWG", "craft_iso": "1 mm2"}
 COPPER_20 = 1000 / 58        # Ω·mm²/km, IEC 60028
-CLAD_20 = 27.5               # Ω·mm²/km of copper-clad aluminium, a tenth copper: recalled, not in the report
 ZERO = 234.5                 # IEC 60028, inferred zero-resistance temperature, sign changed
 
 
@@ -71,10 +70,8 @@ def greatest_product(coating):
     return max(r[0] * r[at] for r in found["rows"] if r[at] != "")
 
 
-def per_km_20(size, material, coating):
-    """Ω/km at 20 °C of a class 5 conductor."""
-    if material != "copper":
-        return greatest_product(coating) * CLAD_20 / COPPER_20 / area(size)
+def per_km_20(size, coating):
+    """Ω/km at 20 °C of a class 5 copper conductor."""
     if (size, coating) == ("35 mm2", "plain"):
         return 0.554                                    # blank in the reference: IEC 60228:2004, Table 3, recalled
     if size.endswith("mm2"):
