@@ -1,1 +1,0 @@
-//! Loads: what draws current, and how it depends on voltage.
