@@ -89,8 +89,12 @@ fn conventional_currents_of_breakers() {
     assert_eq!(table.len(), 4);
     for row in table.rows() {
         let name = row.text("device");
-        let ratings: &[f64] =
-            if name.ends_with("≤ 63 A") { &[6.0, 16.0, 63.0] } else { &[63.1, 80.0, 1000.0] };
+        // IEC 60898-1 ends at 125 A; beyond the largest rating of a family nothing is held.
+        let ratings: &[f64] = match (name.ends_with("≤ 63 A"), name.starts_with("IEC 60898-1")) {
+            (true, _) => &[6.0, 16.0, 63.0],
+            (false, true) => &[63.1, 80.0, 125.0],
+            (false, false) => &[63.1, 80.0, 1000.0],
+        };
         let families: &[Family] = if name.starts_with("IEC 60898-1") {
             &[Family::MiniatureB, Family::MiniatureC]
         } else {

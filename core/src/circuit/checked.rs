@@ -135,6 +135,15 @@ impl fmt::Display for Numbers<'_> {
             Relation::Plain => return Ok(()),
         };
         if *outcome == Outcome::Failed && Figures(*actual).reads_like(*limit) {
+            // As many places as tell them apart.
+            for places in 3..17_u8 {
+                if libm::round(actual * libm::pow(10.0, places.into()))
+                    != libm::round(limit * libm::pow(10.0, places.into()))
+                {
+                    let places = usize::from(places);
+                    return write!(f, "{actual:.places$} {unit}, {words} {limit:.places$} {unit}");
+                }
+            }
             return write!(f, "{actual} {unit}, {words} {limit} {unit}");
         }
         // Prospective currents are bounds, not four digits (R6).

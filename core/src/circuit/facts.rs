@@ -343,10 +343,13 @@ impl Facts<'_> {
 
     pub fn start_voltage(&self, end: ElectricPotential, own: ElectricalResistance) -> Option<Checked> {
         let (extra, least) = self.run.start.zip(self.run.least_voltage)?;
-        let dip: ElectricPotential = extra * (self.run.resistance_before + own);
+        let volts: ElectricPotential = match self.run.started {
+            Some((beginning, through)) => beginning - through * own,
+            None => end - extra * (self.run.resistance_before + own),
+        };
         Some(Checked::at_least(
             Check::StartVoltage,
-            (end - dip).get::<volt>(),
+            volts.get::<volt>().max(0.0),
             least.get::<volt>(),
             "V",
             "voltage at the far end while it starts, with the source at cut-off",

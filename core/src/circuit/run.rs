@@ -85,6 +85,9 @@ pub struct Run {
     pub start: Option<ElectricCurrent>,
     /// Loop resistance from the source to the run's beginning: the start current flows through it too.
     pub resistance_before: ElectricalResistance,
+    /// Where the network was solved for the start: voltage at the run's beginning then, and the current in the run.
+    /// Without it the start's drop is laid over that of the worst hour.
+    pub started: Option<(ElectricPotential, ElectricCurrent)>,
     /// Greatest prospective current at the device; `None` where the source's is not known (R6).
     pub greatest_fault: Option<ElectricCurrent>,
     /// Where the greatest is not known: the part of it that is, a lower bound.
@@ -140,6 +143,7 @@ impl Run {
             least_voltage: None,
             start: None,
             resistance_before: ElectricalResistance::new::<ohm>(0.0),
+            started: None,
             greatest_fault: None,
             fault_floor: None,
             fault_by_thumb: false,

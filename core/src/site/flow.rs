@@ -56,6 +56,8 @@ pub(super) struct Flow {
     pub weakest_at_end: Option<Source>,
     /// Current that comes on top while the load at the far end starts, A.
     pub start: Option<f64>,
+    /// Volts at its beginning and amperes in it while its own load starts.
+    pub started: Option<(f64, f64)>,
     /// Loop resistance from the source to the circuit's beginning, ohm.
     pub ohms_before: f64,
     /// What stands at its end, seen from the source.
@@ -305,6 +307,7 @@ impl Flow {
         self.drop_before = lowest.drop_before;
         self.ohms_before = lowest.ohms_before;
         self.start = lowest.start;
+        self.started = lowest.started;
         self.end = Some(lowest.end);
     }
 }
@@ -337,6 +340,7 @@ const fn none() -> Flow {
         weakest_at_beginning: None,
         weakest_at_end: None,
         start: None,
+        started: None,
         ohms_before: 0.0,
         end: None,
     }

@@ -445,6 +445,9 @@ fn run_of(site: &Site, circuit: &CircuitEntry, draft: &Draft, flow: &Flow) -> Ru
         drop: circuit.drop,
         least_voltage: flow.least_voltage.map(ElectricPotential::new::<volt>),
         start: flow.start.map(ElectricCurrent::new::<ampere>),
+        started: flow.started.map(|(volts, amps)| {
+            (ElectricPotential::new::<volt>(volts), ElectricCurrent::new::<ampere>(amps))
+        }),
         resistance_before: ElectricalResistance::new::<ohm>(flow.ohms_before),
         greatest_fault: Fault::parts(flow.fault_at_beginning).0,
         fault_floor: Fault::parts(flow.fault_at_beginning).1,

@@ -10,7 +10,7 @@ use uom::si::electrical_resistance::ohm;
 use uom::si::power::watt;
 use uom::si::ratio::ratio;
 
-use super::graph::{Item, Tree};
+use super::graph::{Item, Node, Tree};
 use super::model::{LoadKind, Site};
 use crate::error::Error;
 use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
@@ -33,6 +33,9 @@ pub(super) struct State {
     pub ohms_before: f64,
     /// The largest start behind it, A on top.
     pub start: Option<f64>,
+    /// While its own load starts: volts at its beginning and amperes in it; nought and nought where no voltage
+    /// carries the rest of the network any more.
+    pub started: Option<(f64, f64)>,
     /// The circuit before it on the way from the source.
     pub before: Option<usize>,
     /// What stands at its far end.
@@ -89,6 +92,14 @@ pub(super) struct Solver<'a, F> {
     pub ohms: &'a F,
 }
 
+fn run(nodes: &[TreeNode], emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
+    let mut states = vec![NodeState::default(); nodes.len()];
+    // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
+    let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
+    solve(root, nodes, &mut states)?;
+    Ok(states)
+}
+
 impl<F: Fn(usize) -> f64> Solver<'_, F> {
     pub fn solve(&self, tree: &Tree, emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
         self.run(tree, emf, None)
@@ -105,27 +116,54 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         emf: ElectricPotential,
         as_current: Option<ElectricPotential>,
     ) -> Result<Vec<NodeState>, Error> {
-        let nodes: Vec<TreeNode> = tree
-            .nodes
-            .iter()
-            .map(|n| {
-                let mut load = node_load(self.site, n.item, self.nominal, as_current);
-                if let Some(&amps) = self.drawn.get(&n.item) {
-                    load.current += ElectricCurrent::new::<ampere>(amps);
-                }
-                TreeNode {
-                    parent: n.parent,
-                    resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, self.ohms)),
-                    load,
-                    source: None,
-                }
-            })
-            .collect();
-        let mut states = vec![NodeState::default(); nodes.len()];
-        // The cut-off voltage is the bank's terminal voltage under load: no resistance behind it.
-        let root = Source { emf, resistance: ElectricalResistance::new::<ohm>(0.0) };
-        solve(root, &nodes, &mut states)?;
-        Ok(states)
+        let nodes = self.nodes(tree, as_current);
+        run(&nodes, emf)
+    }
+
+    fn nodes(&self, tree: &Tree, as_current: Option<ElectricPotential>) -> Vec<TreeNode> {
+        let node = |n: &Node| {
+            let mut load = node_load(self.site, n.item, self.nominal, as_current);
+            if let Some(&amps) = self.drawn.get(&n.item) {
+                load.current += ElectricCurrent::new::<ampere>(amps);
+            }
+            TreeNode {
+                parent: n.parent,
+                resistance: ElectricalResistance::new::<ohm>(n.circuit.map_or(0.0, self.ohms)),
+                load,
+                source: None,
+            }
+        };
+        tree.nodes.iter().map(node).collect()
+    }
+
+    /// The network once more while one node's own load starts (R3: solved): one of a kind draws its start current, an
+    /// inverter its surge.
+    fn started(&self, tree: &Tree, index: usize, emf: f64) -> Option<(f64, f64)> {
+        let node = tree.nodes.get(index)?;
+        let mut nodes = self.nodes(tree, None);
+        let mut load = node_load(self.site, node.item, self.nominal, None);
+        match node.item {
+            Item::Load(i) => {
+                let stated = self.site.loads.get(i)?;
+                let rest = 1.0 - 1.0 / f64::from(stated.count.max(1));
+                load.power *= rest;
+                load.current *= rest;
+                load.resistive *= rest;
+                load.current += stated.start?;
+            }
+            Item::Inverter(i) => {
+                let inverter = self.site.inverters.get(i)?;
+                load.power = inverter.surge? / inverter.efficiency;
+            }
+            Item::Bank(_) | Item::Board(_) => return None,
+        }
+        if let Some(&amps) = self.drawn.get(&node.item) {
+            load.current += ElectricCurrent::new::<ampere>(amps);
+        }
+        nodes.get_mut(index)?.load = load;
+        let Ok(solved) = run(&nodes, ElectricPotential::new::<volt>(emf)) else { return Some((0.0, 0.0)) };
+        let beginning = solved.get(node.parent)?.voltage.get::<volt>();
+        Some((beginning, libm::fabs(solved.get(index)?.current.get::<ampere>())))
     }
 
     /// What each circuit of a solved tree carries and where its ends stand.
@@ -154,6 +192,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 drop_before: (emf - above).clamp(0.0, emf),
                 ohms_before,
                 start: starts.get(index).copied().flatten(),
+                started: self.started(tree, index, emf),
                 before: tree.nodes.get(node.parent).and_then(|p| p.circuit),
                 end: node.item,
             });
