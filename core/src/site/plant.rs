@@ -308,9 +308,18 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
         }
         if bank.greatest_discharge.is_none() {
             found.add(
-                Severity::NotChecked, "R11", "discharge-limit-not-stated", place.clone(), bank.line,
-                format!("check not made: {} A in the worst hour against what the bank may give; state greatest_discharge", digits(drawn)),
-                None, "",
+                Severity::NotChecked,
+                "R11",
+                "discharge-limit-not-stated",
+                place.clone(),
+                bank.line,
+                format!(
+                    "check not made: {} A in the worst hour against what the bank may give; state \
+                     greatest_discharge",
+                    digits(drawn)
+                ),
+                None,
+                "",
             );
         }
         if let Some(limit) = bank.greatest_discharge.map(|a| a.get::<ampere>())
@@ -334,15 +343,34 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
         let highest = bank.highest.get::<volt>();
         if highest > EXTRA_LOW_V {
             found.add(
-                Severity::NotChecked, "R19", "above-extra-low-voltage", place.clone(), bank.line,
-                format!("check not made: at {} V DC fault protection by disconnection, insulation and clearances; above {} V it is no extra-low voltage", digits(highest), digits(EXTRA_LOW_V)),
-                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)), "",
+                Severity::NotChecked,
+                "R19",
+                "above-extra-low-voltage",
+                place.clone(),
+                bank.line,
+                format!(
+                    "check not made: at {} V DC fault protection by disconnection, insulation and \
+                     clearances; above {} V it is no extra-low voltage",
+                    digits(highest),
+                    digits(EXTRA_LOW_V)
+                ),
+                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)),
+                "",
             );
         }
         if highest > TOUCH_V {
             found.add(
-                Severity::NotChecked, "R19", "touch-protection", place.clone(), bank.line,
-                format!("the bank reaches {} V, above {} V: protection against touch is not described in the document", digits(highest), digits(TOUCH_V)),
+                Severity::NotChecked,
+                "R19",
+                "touch-protection",
+                place.clone(),
+                bank.line,
+                format!(
+                    "the bank reaches {} V, above {} V: protection against touch is not described in \
+                     the document",
+                    digits(highest),
+                    digits(TOUCH_V)
+                ),
                 Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)),
                 "cover live parts and mark them",
             );

@@ -213,16 +213,19 @@ fn line_of(site: &Site, plan: &Plan, index: usize, circuit: &CircuitEntry, plann
         chassis: circuit.way_back != Return::Conductor,
         collapsed: plan.collapsed.contains(&index),
         guarded_by: planned.guarded_by.map(name),
-        practice: practice_figure(planned.positive.size, planned.positive.insulation.rating_degC()).map(|p| {
-            let table = planned.judgement.ampacity.as_ref().map_or(f64::NAN, |a| a.base.value);
-            format!(
-                "common practice gives {} A for this conductor ({}); the rule set's table gives {} A, {:+.1} %",
-                digits(p.amps),
-                p.words,
-                digits(table),
-                (table / p.amps - 1.0) * 100.0
-            )
-        }),
+        practice: practice_figure(planned.positive.size, planned.positive.insulation.rating_degC()).map(
+            |p| {
+                let table = planned.judgement.ampacity.as_ref().map_or(f64::NAN, |a| a.base.value);
+                format!(
+                    "common practice gives {} A for this conductor ({}); the rule set's table gives {} \
+                     A, {:+.1} %",
+                    digits(p.amps),
+                    p.words,
+                    digits(table),
+                    (table / p.amps - 1.0) * 100.0
+                )
+            },
+        ),
     }
 }
 
@@ -514,7 +517,8 @@ fn not_covered(site: &Site) -> Vec<String> {
     }
     lines.push("loads and inverters that can feed back: every one is taken for a load only".to_string());
     lines.push(
-        "size of bank and array, charging, ventilation, lightning and protective conductors: not part of this report"
+        "size of bank and array, charging, ventilation, lightning and protective conductors: not \
+             part of this report"
             .to_string(),
     );
     lines

@@ -72,7 +72,8 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
                 "no-solution",
                 at.place(),
                 circuit.line,
-                "no voltage carries the constant-power loads at this end and beyond: they pull the line down"
+                "no voltage carries the constant-power loads at this end and beyond: they pull the \
+                     line down"
                     .to_string(),
                 None,
                 "use larger conductors on the path, less load or a higher voltage",
@@ -251,16 +252,34 @@ impl Place<'_> {
         let limit = self.site.rules.unfused_length(self.circuit.sheathed, from_post);
         match (stated_m, limit) {
             (Some(actual), Some(limit)) if actual > limit.value.get::<meter>() => found.add(
-                Severity::Danger, "R7", "device-too-far-from-source", place, line,
-                format!("{} m of conductor without protection, at most {} m", digits(actual), digits(limit.value.get::<meter>())),
-                Some(limit.citation), "move the device towards the source",
+                Severity::Danger,
+                "R7",
+                "device-too-far-from-source",
+                place,
+                line,
+                format!(
+                    "{} m of conductor without protection, at most {} m",
+                    digits(actual),
+                    digits(limit.value.get::<meter>())
+                ),
+                Some(limit.citation),
+                "move the device towards the source",
             ),
             (Some(actual), None) if actual > 0.0 => found.add(
-                Severity::NotChecked, "R7", "device-distance-not-limited", place, line,
-                format!("check not made: {} m of conductor without protection, and the rule set holds no length for this case", digits(actual)),
+                Severity::NotChecked,
+                "R7",
+                "device-distance-not-limited",
+                place,
+                line,
+                format!(
+                    "check not made: {} m of conductor without protection, and the rule set holds no \
+                     length for this case",
+                    digits(actual)
+                ),
                 None,
                 if !self.circuit.sheathed && self.site.rules.unfused_length(true, from_post).is_some() {
-                    "where a sheath or enclosure guards it throughout and nothing combustible is near, state sheathed = true"
+                    "where a sheath or enclosure guards it throughout and nothing combustible is \
+                         near, state sheathed = true"
                 } else {
                     ""
                 },
@@ -268,9 +287,16 @@ impl Place<'_> {
             // At a board the device sits in the board.
             (None, _) if !from_post => {}
             (None, _) => found.add(
-                Severity::NotChecked, "R7", "device-distance-not-stated", place, line,
-                "check not made: conductor length between the bank and the device; state from_source".to_string(),
-                None, "",
+                Severity::NotChecked,
+                "R7",
+                "device-distance-not-stated",
+                place,
+                line,
+                "check not made: conductor length between the bank and the device; state \
+                     from_source"
+                    .to_string(),
+                None,
+                "",
             ),
             (Some(_), _) => {}
         }
@@ -313,9 +339,17 @@ impl Place<'_> {
                 ),
                 None => {
                     found.add(
-                        Severity::NotChecked, "R7", "feeding-end-not-checked", self.place(), self.circuit.line,
-                        format!("check not made: no device at \"{name}\", and the conductor has no tabulated capacity"),
-                        None, "",
+                        Severity::NotChecked,
+                        "R7",
+                        "feeding-end-not-checked",
+                        self.place(),
+                        self.circuit.line,
+                        format!(
+                            "check not made: no device at \"{name}\", and the conductor has no \
+                             tabulated capacity"
+                        ),
+                        None,
+                        "",
                     );
                     continue;
                 }
@@ -339,9 +373,16 @@ impl Place<'_> {
         let craft = matches!(self.site.rules.set().key, Key::CraftIso | Key::CraftUs);
         if craft && !self.circuit.cranking {
             found.add(
-                Severity::Danger, "R9", "chassis-return", self.place(), self.circuit.line,
-                "hull or chassis carries the return current; under craft rules only the engine block may, for cranking and alternator".to_string(),
-                None, "run a return conductor",
+                Severity::Danger,
+                "R9",
+                "chassis-return",
+                self.place(),
+                self.circuit.line,
+                "hull or chassis carries the return current; under craft rules only the engine \
+                     block may, for cranking and alternator"
+                    .to_string(),
+                None,
+                "run a return conductor",
             );
         } else if resistance.is_none() {
             found.add(
@@ -512,13 +553,19 @@ impl Place<'_> {
         let at_nominal = judge(&Run { demand, ..*run }, positive, negative, fitted.first().map(|f| &f.guard));
         if at_nominal.is_ok_and(|j| sized(&j)) {
             found.add(
-                Severity::Danger, "R3", "feed-sized-at-nominal", self.place(), self.circuit.line,
+                Severity::Danger,
+                "R3",
+                "feed-sized-at-nominal",
+                self.place(),
+                self.circuit.line,
                 format!(
-                    "conductor and device suit {} A, power over nominal voltage; at cut-off, with its efficiency, the inverter draws {} A",
+                    "conductor and device suit {} A, power over nominal voltage; at cut-off, with \
+                         its efficiency, the inverter draws {} A",
                     digits(nominal.get::<ampere>()),
                     digits(judgement.current.get::<ampere>())
                 ),
-                None, "size the feed for the lowest voltage at the inverter's terminals",
+                None,
+                "size the feed for the lowest voltage at the inverter's terminals",
             );
         }
     }
