@@ -6,7 +6,7 @@ use super::book::{
     AmbientRule, ConductorRule, Count, DeviceRule, DropRule, EngineRule, Grouping, NextRating, Placement,
     ProtectiveRule, RuleSet, UnfusedRule,
 };
-use super::query::{Check, Installation, Key, Limit, Terms};
+use super::query::{Installation, Key, Limit, ORDER, Terms};
 use super::table::{AmpacityTable, Band, FactorColumn, FactorTable, column, figures, mm2};
 use crate::citation::{Citation, Seen};
 use crate::quantity::ConductorSize;
@@ -139,23 +139,7 @@ pub(super) static SET: RuleSet = RuleSet {
         earth: "earth",
         conduit: "conduit",
     },
-    order: &[
-        Check::Conductor,
-        Check::LeastSize,
-        Check::Ampacity,
-        Check::DeviceCarries,
-        Check::DeviceStart,
-        Check::DeviceProtects,
-        Check::OpensLate,
-        Check::Drop,
-        Check::LoadVoltage,
-        Check::StartVoltage,
-        Check::DeviceSupply,
-        Check::Breaking,
-        Check::LeastFault,
-        Check::Withstand,
-        Check::Termination,
-    ],
+    order: ORDER,
     ampacity_tables: TABLES,
     factor_tables: &[&ENGINE, &BUNDLING],
     placements: &[Placement {

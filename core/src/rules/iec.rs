@@ -14,7 +14,7 @@ use super::book::{
     AmbientRule, ByLine, ConductorRule, Count, DeviceRule, DropRule, Grouping, Instead, NextRating,
     Placement, ProtectiveRule, RuleSet, UnfusedRule,
 };
-use super::query::{Check, Installation, Key, Limit, Terms};
+use super::query::{Installation, Key, Limit, ORDER, Terms};
 use super::table::{AmpacityTable, mm2};
 use crate::citation::{Citation, Seen};
 use crate::quantity::ConductorSize;
@@ -94,23 +94,7 @@ pub(super) static SET: RuleSet = RuleSet {
         earth: "earth",
         conduit: "conduit",
     },
-    order: &[
-        Check::Conductor,
-        Check::LeastSize,
-        Check::Ampacity,
-        Check::DeviceCarries,
-        Check::DeviceStart,
-        Check::DeviceProtects,
-        Check::OpensLate,
-        Check::Drop,
-        Check::LoadVoltage,
-        Check::StartVoltage,
-        Check::DeviceSupply,
-        Check::Breaking,
-        Check::LeastFault,
-        Check::Withstand,
-        Check::Termination,
-    ],
+    order: ORDER,
     ampacity_tables: &[&TABLE_B_52_2, &TABLE_B_52_3, &TABLE_B_52_10, &TABLE_B_52_12],
     factor_tables: &[&AMBIENT_AIR, &AMBIENT_GROUND, &GROUPING, &GROUPING_GROUND],
     placements: &[

@@ -165,6 +165,25 @@ pub enum LoadUse {
     Other,
 }
 
+/// Order of the checks where a set has no rule of its own for the terminal.
+pub(super) const ORDER: &[Check] = &[
+    Check::Conductor,
+    Check::LeastSize,
+    Check::Ampacity,
+    Check::DeviceCarries,
+    Check::DeviceStart,
+    Check::DeviceProtects,
+    Check::OpensLate,
+    Check::Drop,
+    Check::LoadVoltage,
+    Check::StartVoltage,
+    Check::DeviceSupply,
+    Check::Breaking,
+    Check::LeastFault,
+    Check::Withstand,
+    Check::Termination,
+];
+
 /// The checks a run must pass; the rule set gives their order.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 #[non_exhaustive]
