@@ -42,8 +42,16 @@ fn main() -> ExitCode {
 fn load(path: &std::ffi::OsStr) -> Result<Vec<u8>, String> {
     let name = path.to_string_lossy();
     let fault = |error: std::io::Error| format!("{name}: cannot be read: {error}");
-    if fs::metadata(path).map_err(fault)?.is_dir() {
+    let about = fs::metadata(path).map_err(fault)?;
+    if about.is_dir() {
         return Err(format!("{name}: is a directory; name a site file"));
+    }
+    if about.len() >= MOST_BYTES {
+        return Err(format!(
+            "{name}: has {} bytes, at most {} are read; split the site",
+            about.len(),
+            MOST_BYTES - 1
+        ));
     }
     let mut bytes = Vec::new();
     File::open(path).map_err(fault)?.take(MOST_BYTES).read_to_end(&mut bytes).map_err(fault)?;
