@@ -48,7 +48,7 @@ fn load(path: &std::ffi::OsStr) -> Result<Vec<u8>, String> {
     }
     if about.len() >= MOST_BYTES {
         return Err(format!(
-            "{name}: has {} bytes, at most {} are read; split the site",
+            "{name}: has {} bytes; at most {} are read: a site file lists circuits, not measurements",
             about.len(),
             MOST_BYTES - 1
         ));

@@ -84,7 +84,7 @@ impl Offer<'_> {
 /// | `carries` | 1 | > 0 … 1; the family's continuous ratio |
 ///
 /// # Source
-/// Rules R4 and R5 of the design: continuous load at most 80 % of a device unless it is rated for 100 %; NFPA 70-2023,
+/// Rules rules R4 and R5, guide `rules`: continuous load at most 80 % of a device unless it is rated for 100 %; NFPA 70-2023,
 /// 210.20(A) and 215.3 give the factor 1.25 (page seen). Never multiplied together: the larger factor counts.
 ///
 /// # Example

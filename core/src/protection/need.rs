@@ -31,7 +31,7 @@ calculations! {
         continuous_factor: Ratio in ratio [1.0 ..= 2.0] = 1.25,
     ) -> rating: ElectricCurrent in ampere
     formula "I_n ≥ max(k, 1/c)·I_continuous + I_other"
-    source "R4 and R5 of the design; NFPA 70-2023, 210.20(A) and 215.3 give the factor 1.25"
+    source "rules R4 and R5, guide `rules`; NFPA 70-2023, 210.20(A) and 215.3 give the factor 1.25"
     { least_rating(continuous_current, other_current, continuous_share, false, continuous_factor.get::<ratio>()) }
 }
 

@@ -45,7 +45,7 @@ pub enum PoleFault {
 /// Judges the pole of a device; `None` where it is right.
 ///
 /// # Source
-/// Rule R7 of the design; for the earthed pole also IEC 60364-4-43:2008, 431.2 (recalled).
+/// Rule R7 (guide `rules`); for the earthed pole also IEC 60364-4-43:2008, 431.2 (recalled).
 ///
 /// # Example
 /// ```

@@ -16,7 +16,7 @@ use crate::quantity::{ConductorSize, ElectricCurrent, Length, Ratio};
 const NAMES: &str =
     "us, iec, craft_iso, craft_us, or pinned us-2023, iec-2009, craft_iso-2020, craft_us-2015";
 
-// R18 of the design: our own rule in every set.
+// Rule R18 (guide `rules`): our own rule in every set.
 const METALS: Citation = Citation::new("ampwright", "rule R18", Seen::Practice);
 
 /// A rule set with the user's overrides: what the floors above ask.

@@ -2,10 +2,12 @@
 
 use alloc::format;
 use alloc::string::{String, ToString};
+use alloc::vec::Vec;
 use core::fmt;
 
 use crate::cable::Material;
 use crate::circuit::{Checked, Outcome, Relation};
+use crate::citation::Citation;
 use crate::quantity::Figures;
 use crate::rules::Check;
 
@@ -69,6 +71,36 @@ impl fmt::Display for Finding {
             write!(f, "; {}", self.remedy)?;
         }
         write!(f, " <{}>", self.slug)
+    }
+}
+
+/// Collects findings with their place, and what passed beside the checks of single runs.
+#[derive(Default)]
+pub(super) struct Findings {
+    pub list: Vec<Finding>,
+    pub passed: Vec<String>,
+}
+
+impl Findings {
+    #[allow(clippy::too_many_arguments)] // the fields of a finding, in its order
+    pub fn add(
+        &mut self,
+        severity: Severity,
+        rule: &'static str,
+        slug: &'static str,
+        place: impl Into<String>,
+        line: u32,
+        text: String,
+        source: Option<Citation>,
+        remedy: &'static str,
+    ) {
+        let source = source.map_or_else(String::new, |c| c.to_string());
+        self.list.push(Finding { severity, rule, slug, place: place.into(), line, text, source, remedy });
+    }
+
+    /// Notes a check that passed.
+    pub fn pass(&mut self, rule: &'static str, place: &str, text: &str) {
+        self.passed.push(format!("{rule} {place}: {text}"));
     }
 }
 

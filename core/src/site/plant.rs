@@ -6,11 +6,10 @@ use alloc::string::ToString;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
-use super::finding::{Severity, digits};
+use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
 use super::model::{BankEntry, Site};
 use super::plan::{Plan, sources};
-use super::wiring::Findings;
 use crate::battery::cell_voltages;
 use crate::citation::{Citation, Seen};
 use crate::protection::Earthing;
@@ -66,7 +65,13 @@ pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
                 None,
                 "use a busbar rated for the sum of its sources or loads, whichever is greater",
             ),
-            Some(_) => {}
+            Some(rating) => {
+                found.pass(
+                    "R8",
+                    &place,
+                    &format!("busbar rated {} A, at least {} A", digits(rating), digits(need)),
+                );
+            }
         }
         if let Some(lugs) = board.lugs_on_stud.filter(|&l| l > LUGS) {
             found.add(
@@ -115,7 +120,11 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
                     None,
                     "use a load for the full range, a converter, or disconnect it while equalising",
                 ),
-                Some(_) => {}
+                Some(greatest) => found.pass(
+                    "R3",
+                    &place,
+                    &format!("bears {} V, the bank reaches {} V", digits(greatest), digits(highest)),
+                ),
                 None => found.add(
                     Severity::NotChecked,
                     "R3",

@@ -118,6 +118,8 @@ pub struct Report {
     pub circuits: Vec<CircuitLine>,
     /// Findings, gravest first.
     pub findings: Vec<Finding>,
+    /// What passed on boards, parts, lugs and consumers; the checks of single runs stand with their circuits.
+    pub passed: Vec<String>,
     /// What to buy for what was designed.
     pub purchases: Vec<Purchase>,
     /// What was taken where the document says nothing.
@@ -164,12 +166,14 @@ pub fn inspect(site: &Site) -> Result<Report, Problems> {
             Some(line_of(site, &plan, index, circuit, planned.as_ref()?))
         })
         .collect();
+    let found = findings(site, &plan);
     Ok(Report {
         name: site.name.clone(),
         edition: site.rules.set().edition.to_string(),
         overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
         system: system(site),
-        findings: findings(site, &plan),
+        findings: found.list,
+        passed: found.passed,
         purchases: purchases(site, &plan),
         assumptions: assumptions(site, &plan),
         recalled: recalled(&circuits),

@@ -47,6 +47,7 @@ impl fmt::Display for Report {
             writeln!(f)?;
             detail(f, number + 1, circuit)?;
         }
+        list(f, "Passed on boards, parts, lugs and consumers", &self.passed)?;
         self.bought(f)?;
         list(f, "Taken where the document says nothing", &self.assumptions)?;
         list(

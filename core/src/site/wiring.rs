@@ -9,7 +9,7 @@ use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 
-use super::finding::{Finding, Severity, digits, of_check};
+use super::finding::{Findings, Severity, digits, of_check};
 use super::graph::{Item, Tree};
 use super::model::{CircuitEntry, Return, Site};
 use super::plan::{Fitted, Plan, Planned};
@@ -17,7 +17,6 @@ use super::plant::{banks, boards, consumers};
 use super::reach::Reach;
 use crate::cable::{Stud, joint_resistance, lug_fits};
 use crate::circuit::{Demand, Judgement, Outcome, Run, capacity, judge};
-use crate::citation::Citation;
 use crate::device::{Polarity, Supply};
 use crate::protection::{End, Pole, PoleFault, pole_fault};
 use crate::quantity::ElectricCurrent;
@@ -26,30 +25,9 @@ use crate::rules::Key;
 /// Heat of one joint that deserves a look, W: common practice, no source.
 const JOINT_W: f64 = 5.0;
 
-/// Collects findings with their place.
-pub(super) struct Findings(pub Vec<Finding>);
-
-impl Findings {
-    #[allow(clippy::too_many_arguments)] // the fields of a finding, in its order
-    pub fn add(
-        &mut self,
-        severity: Severity,
-        rule: &'static str,
-        slug: &'static str,
-        place: impl Into<String>,
-        line: u32,
-        text: String,
-        source: Option<Citation>,
-        remedy: &'static str,
-    ) {
-        let source = source.map_or_else(String::new, |c| c.to_string());
-        self.0.push(Finding { severity, rule, slug, place: place.into(), line, text, source, remedy });
-    }
-}
-
 /// All findings of a plan, gravest first, in the order of the document within.
-pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
-    let mut found = Findings(Vec::new());
+pub(super) fn findings(site: &Site, plan: &Plan) -> Findings {
+    let mut found = Findings::default();
     let reach = Reach::new(site, &plan.trees, &plan.circuits);
     let ends = ends(&plan.trees, site.circuits.len());
     for (index, circuit) in site.circuits.iter().enumerate() {
@@ -83,8 +61,8 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Vec<Finding> {
     boards(site, plan, &mut found);
     consumers(site, plan, &mut found);
     banks(site, plan, &mut found);
-    found.0.sort_by_key(|f| f.severity);
-    found.0
+    found.list.sort_by_key(|f| f.severity);
+    found
 }
 
 /// Items on the source's side and at the far end of each circuit.
@@ -174,12 +152,12 @@ impl Place<'_> {
                 finding.text = format!("check not made: {error}");
                 finding.source.clear();
             }
-            found.0.extend(finding);
+            found.list.extend(finding);
         }
         for (fitted, judgement) in self.planned.fitted.iter().skip(1).zip(&self.planned.further) {
             let (place, line) = self.of_device(fitted);
             for checked in judgement.checks.iter().filter(|c| of_device(c.check)) {
-                found.0.extend(of_check(checked, &place, line, material, required));
+                found.list.extend(of_check(checked, &place, line, material, required));
             }
         }
     }
@@ -434,7 +412,11 @@ impl Place<'_> {
                     None,
                     "use a part rated for at least its device",
                 ),
-                Some(_) => {}
+                Some(rating) => found.pass(
+                    "R8",
+                    &place,
+                    &format!("rated {} A, at least {} A", digits(rating), digits(need)),
+                ),
             }
             let highest = self.planned.run.highest.get::<volt>();
             match part.supply {
@@ -442,7 +424,7 @@ impl Place<'_> {
                     Severity::Danger,
                     "R6",
                     "part-not-for-dc",
-                    place,
+                    place.clone(),
                     part.line,
                     "the part is rated for AC only; on DC its arc need not go out".to_string(),
                     None,
@@ -452,7 +434,7 @@ impl Place<'_> {
                     Severity::Danger,
                     "R6",
                     "part-voltage-too-low",
-                    place,
+                    place.clone(),
                     part.line,
                     format!("rated {} V DC, at least {} V", digits(rated.get::<volt>()), digits(highest)),
                     None,
@@ -468,7 +450,11 @@ impl Place<'_> {
                     None,
                     "",
                 ),
-                Supply::Dc(_) | Supply::PerPole(..) => {}
+                Supply::Dc(rated) | Supply::PerPole(rated, _) => found.pass(
+                    "R6",
+                    &place,
+                    &format!("rated {} V DC, at least {} V", digits(rated.get::<volt>()), digits(highest)),
+                ),
             }
         }
     }
@@ -503,7 +489,12 @@ impl Place<'_> {
                     None,
                     "",
                 ),
-                _ => {}
+                Some(lug) => found.pass(
+                    "R8",
+                    &self.place(),
+                    &format!("lug {lug} on the {stud} terminal of \"{name}\""),
+                ),
+                None => {}
             }
         }
     }
