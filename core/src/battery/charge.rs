@@ -120,8 +120,8 @@ pub struct ChargeLimit {
 /// no error: the rates are 0.
 ///
 /// # Source
-/// Lead-acid: common handbook values, recalled; its temperatures common practice, no source. LFP: cell data sheets and a battery manual, page seen; where they
-/// differ, the lower. NMC and nickel-cadmium recalled.
+/// Lead-acid: common handbook values, recalled; its temperatures common practice, no source. LFP: cell data sheets and
+/// a battery manual, page seen; where they differ, the lower. NMC and nickel-cadmium recalled.
 ///
 /// # Example
 /// ```
