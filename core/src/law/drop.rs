@@ -35,7 +35,7 @@ calculations! {
         current: ElectricCurrent in ampere [any],
     ) -> drop: ElectricPotential in volt
     formula "U = 2·l·ρ·I/A"
-    source "Ohm's law; checked against `tests/reference/cases-conductors.toml`"
+    source "Ohm's law"
     {
         // There and back: two conductors carry the current, whatever the route's length.
         2.0 * one_way * resistivity / cross_section * current

@@ -9,7 +9,8 @@ pub use uom::si::f64::ElectricCurrentDensity;
 calculations! {
     /// Least cross-section that a fault does not overheat before it is cleared.
     ///
-    /// Adiabatic: all heat stays in the metal, which holds for some seconds at most.
+    /// Adiabatic: all heat stays in the metal, which holds for some seconds at most. Below 0.1 s a device that limits the current
+    /// lets through its own I²t, by its maker: that counts in place of current and duration.
     ///
     /// # Example
     /// 3 kA for 0.1 s, copper in cross-linked insulation (k = 143):
@@ -24,13 +25,13 @@ calculations! {
     fn adiabatic_area(
         /// Through the conductor.
         fault_current: ElectricCurrent in ampere [>= 0.0],
-        /// Until the device has opened.
+        /// Until the device has opened, 5 s at most; below 0.1 s the I²t that the device itself lets through counts instead.
         duration: Time in second [> 0.0 ..= 5.0],
         /// k of the standard (A·√s/mm²): the current density that the conductor stands for one second.
         one_second_density: ElectricCurrentDensity in ampere_per_square_millimeter [> 0.0],
     ) -> cross_section: Area in square_millimeter
     formula "S = √(I²·t)/k"
-    source "IEC 60364-4-43, 434.5.2 (recalled)"
+    source "IEC 60364-4-43:2008, 434.5.2, for 0.1 to 5 s; below 0.1 s it asks for the device's own let-through (recalled)"
     { fault_current * sqrt(duration.get::<second>()) / one_second_density }
 }
 

@@ -34,8 +34,9 @@ calculations! {
 
     /// Time to recharge a lead-acid battery, with the tail in which it takes less and less.
     ///
-    /// The tail is an exponential from the knee on; one charge efficiency holds throughout. Both flatter an old or cold
-    /// battery.
+    /// Up to the knee the battery takes what the sources give: ds/dt = η·I/C. Above it the voltage is held and the current falls
+    /// in proportion to what is missing from full, beginning with the sources' current: ds/dt = (1 − s)/τ. That tail is an
+    /// exponential; one charge efficiency holds throughout. Both flatter an old or cold battery.
     ///
     /// # Example
     /// 200 Ah from half to 95 % with 26 A:
@@ -67,8 +68,10 @@ calculations! {
         total: Time in hour,
     }
     where (start <= target) start in ratio: "it must not be above target"
-    formula "t = (min(k, s₁) − s₀)·C/(η·I) + τ·ln((1 − max(k, s₀))/(1 − s₁)), τ = (1 − k)·C/(η·I), each term at least 0"
-    source "integral of the model in this file's header; checked against numeric integration"
+    formula "bulk + tail = (min(k, s₁) − s₀)·C/(η·I) + τ·ln((1 − max(k, s₀))/(1 − s₁)), τ = (1 − k)·C/(η·I), each term at least 0; \
+        s₀ start, s₁ target, k knee, η efficiency; up to the knee ds/dt = η·I/C, above it ds/dt = (1 − s)/τ: voltage held, current \
+        falling in proportion to what is missing from full"
+    source "integral of the two rates; that the current falls so, and from which knee, is common practice, no source"
     {
         let whole = capacity / (efficiency * current);
         let (start, target, knee) = (start.value, target.value, knee.value);

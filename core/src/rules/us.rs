@@ -1,6 +1,7 @@
 //! Tables and limits of the rule set `us`: NFPA 70-2023.
 //!
-//! Figures for copper. A recalled figure is one whose page nobody has seen in this edition.
+//! Figures for copper. A figure is seen where it was read on a published page: not always of this edition, and for Table
+//! 310.16 in reprints of earlier ones. Else it is recalled.
 
 mod tables;
 

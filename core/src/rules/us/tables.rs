@@ -20,8 +20,9 @@ const COLUMNS_RECALLED: &[Column] = &[
 
 /// Copper, not more than three current-carrying conductors in raceway, cable or earth, 30 °C ambient.
 ///
-/// Source: NFPA 70-2023, Table 310.16. Pages seen are reprints up to 2008; the cells the 2011 edition changed,
-/// 4 AWG at 75 °C and all sizes above 500 kcmil are recalled.
+/// Source: NFPA 70-2023, Table 310.16. The pages seen are reprints of editions up to 2008, none of 2023. Recalled: the four
+/// cells that the 2011 edition changed (14 and 12 AWG at 60 °C, 3 and 1 AWG at 90 °C), 4 AWG at 75 °C, all sizes above
+/// 500 kcmil.
 pub(super) static TABLE_310_16: AmpacityTable = AmpacityTable {
     id: "nec-310-16-copper",
     citation: cite("Table 310.16", Seen::Page),
