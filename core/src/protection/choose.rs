@@ -121,7 +121,7 @@ pub fn least_rating(
 /// [`Error::NoneFits`] where the offer ends below the need.
 ///
 /// # Source
-/// Rules R4 and R22 of the design: choosing from standard ratings is a step of its own.
+/// Rules R4 and R22 (guide `rules`): choosing from standard ratings is a step of its own.
 ///
 /// # Example
 /// An inverter that draws 89.6 A in its worst hour, under a set with the factor 1.25:
