@@ -14,7 +14,7 @@ use crate::error::Error;
 use crate::network::line_delivery;
 use crate::protection::Guard;
 use crate::quantity::{
-    ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio, ThermodynamicTemperature,
+    ElectricCurrent, ElectricPotential, ElectricalResistance, Power, Ratio, ThermodynamicTemperature,
 };
 use crate::rules::{Ampacity, AmpacityQuery, Check, DeviceLimit, Key, Space};
 
@@ -234,14 +234,14 @@ fn loop_resistance(
     negative: &Conductor,
     temperature: ThermodynamicTemperature,
 ) -> Result<ElectricalResistance, Error> {
-    let of = |conductor: &Conductor, length: Length| -> Result<ElectricalResistance, Error> {
-        Ok(linear_resistance(conductor, temperature)? * length)
-    };
-    let back = match run.return_resistance {
+    let there = linear_resistance(positive, temperature)?;
+    let back: ElectricalResistance = match run.return_resistance {
         Some(stated) => stated,
-        None => of(negative, run.negative_length)?,
+        None if negative == positive => there * run.negative_length,
+        None => linear_resistance(negative, temperature)? * run.negative_length,
     };
-    Ok(of(positive, run.positive_length)? + back + run.joints)
+    let there: ElectricalResistance = there * run.positive_length;
+    Ok(there + back + run.joints)
 }
 
 /// Continuous and whole current in the worst hour.

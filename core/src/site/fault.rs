@@ -1,5 +1,6 @@
 //! Prospective currents of the site, greatest and least, at both ends of each circuit (R6).
 
+use alloc::collections::BTreeMap;
 use alloc::vec;
 use alloc::vec::Vec;
 
@@ -64,13 +65,20 @@ impl Flows {
         };
         // One bank of unknown current makes every greatest sum a lower bound, and the least unknown.
         let complete = !unknown(|e| e.strongest);
+        let hot: BTreeMap<usize, f64> = tree
+            .nodes
+            .iter()
+            .filter_map(|n| n.circuit)
+            .map(|c| (c, loop_ohms(site, wired, c, None)))
+            .collect();
+        let hot = |c: usize| hot.get(&c).copied().unwrap_or(0.0);
         let strongest = run(|e| e.strongest, None, &|c| cold_ohms(site, wired, c));
         // The least current flows with one bank alone, the others disconnected.
         let weakest: Vec<Vec<FaultState>> = tree
             .nodes
             .iter()
             .filter(|n| matches!(n.item, Item::Bank(_)) && !unknown(|e| e.weakest))
-            .filter_map(|n| run(|e| e.weakest, Some(n.item), &|c| loop_ohms(site, wired, c, None)))
+            .filter_map(|n| run(|e| e.weakest, Some(n.item), &hot))
             .collect();
         let by_thumb = tree.nodes.iter().any(|n| match n.item {
             Item::Bank(i) => banks.get(i).is_some_and(|e| e.by_thumb),

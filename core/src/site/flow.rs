@@ -102,7 +102,11 @@ impl Flows {
         temperatures: &[Option<f64>],
     ) -> Self {
         let banks = sources(site);
-        let ohms = |index: usize| loop_ohms(site, wired, index, temperatures.get(index).copied().flatten());
+        // Once a pass: every state of the network reads them.
+        let ohms: Vec<f64> = (0..site.circuits.len())
+            .map(|index| loop_ohms(site, wired, index, temperatures.get(index).copied().flatten()))
+            .collect();
+        let ohms = |index: usize| ohms.get(index).copied().unwrap_or(0.0);
         let mut flows = Self {
             circuits: vec![none(); site.circuits.len()],
             collapse: None,
