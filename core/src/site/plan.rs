@@ -178,7 +178,7 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         } else if !trimmed {
             // Growing one by one may leave a shared run a size larger than what came after it needs.
             trimmed = true;
-            let own = Neighbours { site, offers: &offers, planned: &planned, flows: &flows };
+            let own = Neighbours::new(site, &offers, &planned, &flows);
             let fewest = failures(&planned);
             let candidates: Vec<usize> = (0..drafts.len()).filter(|&c| own.spare(&drafts, c)).collect();
             for circuit in candidates {

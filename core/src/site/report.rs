@@ -1,5 +1,6 @@
 //! The report as data: what was found and designed, with its reasons. [`super::text`] turns it into words.
 
+use alloc::collections::BTreeMap;
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
@@ -10,12 +11,11 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
-use super::graph::Item;
 use super::model::{CircuitEntry, Return, Site};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
 use super::wiring::{findings, name_of, stud_of};
-use crate::cable::Conductor;
+use crate::cable::{Conductor, Stud};
 use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
 use crate::protection::{Earthing, End, Guard, Pole};
@@ -326,6 +326,9 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
             }),
         }
     };
+    let items = plan.trees.iter().flat_map(|t| t.nodes.iter().map(|n| n.item));
+    let studs: BTreeMap<&str, Stud> =
+        items.filter_map(|item| Some((name_of(site, item), stud_of(site, item)?))).collect();
     for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
         let Some(planned) = planned else { continue };
         if planned.designed() {
@@ -365,12 +368,7 @@ fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
         }
         if planned.designed() {
             for (name, lug) in [(&circuit.from, circuit.from_lug), (&circuit.to, circuit.to_lug)] {
-                let stud = plan
-                    .trees
-                    .iter()
-                    .flat_map(|t| t.nodes.iter().map(|n| n.item))
-                    .find(|&i: &Item| name_of(site, i) == name)
-                    .and_then(|i| stud_of(site, i));
+                let stud = studs.get(name.as_str()).copied();
                 if let Some(stud) = lug.or(stud) {
                     let price = site
                         .stock

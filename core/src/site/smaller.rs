@@ -3,6 +3,7 @@
 //! Currents are those of the plan: a smaller size raises them a little for constant-power loads, so what passes here
 //! is tried on the whole plan before it is taken.
 
+use alloc::vec;
 use alloc::vec::Vec;
 
 use uom::si::electric_potential::volt;
@@ -18,13 +19,37 @@ use crate::rules::Check;
 
 /// A finished plan as the neighbourhood of one circuit.
 pub(super) struct Neighbours<'a> {
-    pub site: &'a Site,
-    pub offers: &'a Offers,
-    pub planned: &'a [Option<Planned>],
-    pub flows: &'a Flows,
+    site: &'a Site,
+    offers: &'a Offers,
+    planned: &'a [Option<Planned>],
+    /// For each circuit those that begin where it ends.
+    next: Vec<Vec<usize>>,
 }
 
-impl Neighbours<'_> {
+impl<'a> Neighbours<'a> {
+    pub fn new(site: &'a Site, offers: &'a Offers, planned: &'a [Option<Planned>], flows: &Flows) -> Self {
+        let mut next = vec![Vec::new(); planned.len()];
+        for (circuit, before) in flows.before.iter().enumerate() {
+            if let Some(list) = before.and_then(|b| next.get_mut(b)) {
+                list.push(circuit);
+            }
+        }
+        Self { site, offers, planned, next }
+    }
+
+    /// Everything behind a circuit.
+    fn behind(&self, circuit: usize) -> Vec<usize> {
+        let mut all = Vec::new();
+        let mut open = vec![circuit];
+        while let Some(here) = open.pop() {
+            let next = self.next.get(here).map_or(&[] as &[usize], Vec::as_slice);
+            all.extend(next);
+            open.extend(next);
+        }
+        all.sort_unstable();
+        all
+    }
+
     /// Whether the next smaller size of a designed circuit would fail nothing here.
     pub fn spare(&self, drafts: &[Draft], circuit: usize) -> bool {
         let next = drafts.get(circuit).and_then(|d| d.sizes.get(d.offered?.checked_sub(1)?));
@@ -61,11 +86,8 @@ impl Neighbours<'_> {
             planned.judgement.current * (judged.resistance - planned.judgement.resistance);
         let lost = lost.get::<volt>();
         // What hangs behind it loses those volts too.
-        for (other, behind) in self.planned.iter().enumerate() {
-            let Some(behind) = behind else { continue };
-            if other == circuit || !self.flows.path(other).contains(&circuit) {
-                continue;
-            }
+        for other in self.behind(circuit) {
+            let Some(Some(behind)) = self.planned.get(other) else { continue };
             let nominal = behind.run.nominal.get::<volt>();
             for checked in &behind.judgement.checks {
                 let shifted = match checked.check {
@@ -98,7 +120,7 @@ pub(super) fn explain(
     planned: &mut [Option<Planned>],
 ) {
     let reasons: Vec<Vec<Refused>> = {
-        let own = Neighbours { site, offers, planned, flows };
+        let own = Neighbours::new(site, offers, planned, flows);
         drafts
             .iter()
             .enumerate()

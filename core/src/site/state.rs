@@ -140,7 +140,6 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
     /// inverter its surge.
     fn started(&self, tree: &Tree, index: usize, emf: f64) -> Option<(f64, f64)> {
         let node = tree.nodes.get(index)?;
-        let mut nodes = self.nodes(tree, None);
         let mut load = node_load(self.site, node.item, self.nominal, None);
         match node.item {
             Item::Load(i) => {
@@ -160,6 +159,8 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         if let Some(&amps) = self.drawn.get(&node.item) {
             load.current += ElectricCurrent::new::<ampere>(amps);
         }
+        // Only now: most nodes start nothing.
+        let mut nodes = self.nodes(tree, None);
         nodes.get_mut(index)?.load = load;
         let Ok(solved) = run(&nodes, ElectricPotential::new::<volt>(emf)) else { return Some((0.0, 0.0)) };
         let beginning = solved.get(node.parent)?.voltage.get::<volt>();
