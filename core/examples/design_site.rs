@@ -33,7 +33,7 @@ fn main() -> ExitCode {
             ExitCode::from(report.exit_code())
         }
         Err(problems) => {
-            eprint!("{problems}");
+            eprintln!("{problems}");
             ExitCode::from(2)
         }
     }
