@@ -7,7 +7,7 @@ mod joint;
 mod lug;
 mod resistance;
 mod resistance_table;
-mod series;
+pub(crate) mod series;
 mod whole;
 
 use crate::catalogue::Entry;

@@ -13,17 +13,17 @@ const fn fixed(size: Result<ConductorSize, Error>) -> ConductorSize {
 }
 
 /// Nominal cross-section of a constant table.
-pub(super) const fn mm2(size: f64) -> ConductorSize {
+pub(crate) const fn mm2(size: f64) -> ConductorSize {
     fixed(ConductorSize::mm2(size))
 }
 
 /// Gauge number of a constant table: 0 is 1/0, −1 is 2/0, −2 is 3/0, −3 is 4/0.
-pub(super) const fn awg(number: i8) -> ConductorSize {
+pub(crate) const fn awg(number: i8) -> ConductorSize {
     fixed(ConductorSize::awg(number))
 }
 
 /// Thousands of circular mils of a constant table.
-pub(super) const fn kcmil(size: u16) -> ConductorSize {
+pub(crate) const fn kcmil(size: u16) -> ConductorSize {
     fixed(ConductorSize::kcmil(size))
 }
 

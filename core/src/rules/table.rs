@@ -2,6 +2,7 @@
 //!
 //! The printed figures and how each was verified; what a rule set asks of them stands in [`super::book`].
 
+pub(super) use crate::cable::series::{awg, kcmil, mm2};
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
 use crate::quantity::ConductorSize;
@@ -214,31 +215,6 @@ impl FactorTable {
         let recalled = column.seen == Seen::Recalled
             || self.recalled.iter().any(|(row, name)| *row == upto && *name == column.name);
         if recalled { self.citation.recalled() } else { self.citation }
-    }
-}
-
-// The sizes of the tables, made at compile time: a size outside the trade's stops the build.
-#[allow(clippy::panic)]
-pub(super) const fn awg(number: i8) -> ConductorSize {
-    match ConductorSize::awg(number) {
-        Ok(size) => size,
-        Err(_) => panic!(),
-    }
-}
-
-#[allow(clippy::panic)]
-pub(super) const fn kcmil(size: u16) -> ConductorSize {
-    match ConductorSize::kcmil(size) {
-        Ok(size) => size,
-        Err(_) => panic!(),
-    }
-}
-
-#[allow(clippy::panic)]
-pub(super) const fn mm2(size: f64) -> ConductorSize {
-    match ConductorSize::mm2(size) {
-        Ok(size) => size,
-        Err(_) => panic!(),
     }
 }
 
