@@ -109,9 +109,13 @@ pub mod quantity;
 pub mod catalogue;
 pub mod law;
 // Floor 2
+pub mod array;
 pub mod battery;
 pub mod cable;
+pub mod converter;
 pub mod device;
+pub mod generator;
+pub mod load;
 // Floor 3
 pub mod rules;
 // Floor 4
@@ -158,6 +162,10 @@ pub fn entries() -> impl Iterator<Item = &'static catalogue::Entry> {
         cable::CATALOGUE,
         device::CATALOGUE,
         battery::CATALOGUE,
+        array::CATALOGUE,
+        converter::CATALOGUE,
+        generator::CATALOGUE,
+        load::CATALOGUE,
         network::CATALOGUE,
         protection::CATALOGUE,
         circuit::CATALOGUE,

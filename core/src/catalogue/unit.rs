@@ -51,6 +51,46 @@ macro_rules! unit {
     ($want:ident ratio) => {
         $crate::catalogue::unit::pick!($want, ::uom::si::ratio::ratio, "", "ratio")
     };
+    ($want:ident degree) => {
+        $crate::catalogue::unit::pick!($want, ::uom::si::angle::degree, "°", "deg")
+    };
+    ($want:ident watt_per_square_meter) => {
+        $crate::catalogue::unit::pick!(
+            $want,
+            ::uom::si::heat_flux_density::watt_per_square_meter,
+            "W/m²",
+            "W_per_m2"
+        )
+    };
+    ($want:ident watt_hour_per_square_meter) => {
+        $crate::catalogue::unit::pick!(
+            $want,
+            ::uom::si::radiant_exposure::watt_hour_per_square_meter,
+            "Wh/m²",
+            "Wh_per_m2"
+        )
+    };
+    ($want:ident per_kelvin) => {
+        $crate::catalogue::unit::pick!($want, ::uom::si::temperature_coefficient::per_kelvin, "/K", "per_K")
+    };
+    ($want:ident cubic_meter_per_hour) => {
+        $crate::catalogue::unit::pick!(
+            $want,
+            ::uom::si::volume_rate::cubic_meter_per_hour,
+            "m³/h",
+            "m3_per_h"
+        )
+    };
+    ($want:ident square_centimeter) => {
+        $crate::catalogue::unit::pick!($want, ::uom::si::area::square_centimeter, "cm²", "cm2")
+    };
+    ($want:ident microfarad) => {
+        $crate::catalogue::unit::pick!($want, ::uom::si::capacitance::microfarad, "µF", "uF")
+    };
+    // Not of `uom`: a plain number of V/K.
+    ($want:ident volt_per_kelvin) => {
+        $crate::catalogue::unit::pick!($want, (), "V/K", "V_per_K")
+    };
     ($want:ident ampere_per_square_millimeter) => {
         $crate::catalogue::unit::pick!(
             $want,
@@ -85,6 +125,7 @@ macro_rules! pick {
 
 /// A plain number in the unit as a value of the type, unchecked.
 macro_rules! value {
+    (volt_per_kelvin $type:ident $x:expr) => { $crate::quantity::volts_per_kelvin($x) };
     (per_hour $type:ident $x:expr) => { <$type>::unchecked($x) };
     (choice $type:ident $x:expr) => {
         <$type as $crate::catalogue::Choice>::of_code($x).unwrap_or(<$type as $crate::catalogue::Choice>::FIRST)
@@ -94,6 +135,7 @@ macro_rules! value {
 
 /// A value of the type as a plain number in the unit.
 macro_rules! plain {
+    (volt_per_kelvin $x:expr) => { $x.value };
     (per_hour $x:expr) => { $x.get() };
     ($unit:ident $x:expr) => { $x.get::<$crate::catalogue::unit::unit!(kind $unit)>() };
 }

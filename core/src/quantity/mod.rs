@@ -19,9 +19,34 @@ pub use text::{Entered, Exact, Textual, exact, parse, parse_entered};
 pub use unit::Dimension;
 
 pub use uom::si::f64::{
-    Area, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, ElectricalResistivity,
-    Energy, Length, Power, Ratio, TemperatureInterval, ThermodynamicTemperature, Time,
+    Angle, Area, Capacitance, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance,
+    ElectricalResistivity, Energy, Length, Power, Ratio, TemperatureInterval, ThermodynamicTemperature, Time,
 };
+
+pub use uom::si::f64::{
+    HeatFluxDensity as Irradiance, RadiantExposure as Irradiation,
+    TemperatureCoefficient as RatioPerTemperature, VolumeRate as VolumeFlow,
+};
+
+/// Voltage per temperature difference; base unit V/K.
+pub type VoltagePerTemperature = uom::si::Quantity<
+    uom::si::ISQ<
+        uom::typenum::P2,
+        uom::typenum::P1,
+        uom::typenum::N3,
+        uom::typenum::N1,
+        uom::typenum::N1,
+        uom::typenum::Z0,
+        uom::typenum::Z0,
+    >,
+    uom::si::SI<f64>,
+    f64,
+>;
+
+/// A voltage per temperature difference, in V/K.
+pub const fn volts_per_kelvin(value: f64) -> VoltagePerTemperature {
+    VoltagePerTemperature { dimension: core::marker::PhantomData, units: core::marker::PhantomData, value }
+}
 
 /// Resistance per conductor length; base unit Ω/m.
 pub type LinearResistance = uom::si::Quantity<

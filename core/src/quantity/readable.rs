@@ -57,6 +57,13 @@ const fn ladder(dimension: Dimension) -> (&'static str, &'static [&'static str])
         Dimension::Rate => ("/h", &["/h"]),
         Dimension::Time => ("s", &["ms", "s", "min", "h", "d"]),
         Dimension::Ratio => ("", &[""]),
+        Dimension::Angle => ("deg", &["deg"]),
+        Dimension::Irradiance => ("W/m2", &["W/m2"]),
+        Dimension::Irradiation => ("kWh/m2", &["kWh/m2"]),
+        Dimension::VoltagePerTemperature => ("mV/K", &["mV/K", "V/K"]),
+        Dimension::RatioPerTemperature => ("%/K", &["%/K"]),
+        Dimension::VolumeFlow => ("m3/h", &["m3/h"]),
+        Dimension::Capacitance => ("uF", &["uF", "mF", "F"]),
     }
 }
 

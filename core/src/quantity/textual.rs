@@ -5,9 +5,10 @@ use core::marker::PhantomData;
 use super::text::Textual;
 use super::unit::Dimension;
 use super::{
-    Area, ChargeRate, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance,
-    ElectricalResistivity, Energy, Length, LinearResistance, Power, Ratio, StateOfCharge,
-    TemperatureInterval, ThermodynamicTemperature, Time,
+    Angle, Area, Capacitance, ChargeRate, ElectricCharge, ElectricCurrent, ElectricPotential,
+    ElectricalResistance, ElectricalResistivity, Energy, Irradiance, Irradiation, Length, LinearResistance,
+    Power, Ratio, RatioPerTemperature, StateOfCharge, TemperatureInterval, ThermodynamicTemperature, Time,
+    VoltagePerTemperature, VolumeFlow,
 };
 use crate::error::Error;
 
@@ -40,6 +41,13 @@ textual! {
     TemperatureInterval: TemperatureDifference;
     Time: Time;
     Ratio: Ratio;
+    Angle: Angle;
+    Irradiance: Irradiance;
+    Irradiation: Irradiation;
+    VoltagePerTemperature: VoltagePerTemperature;
+    RatioPerTemperature: RatioPerTemperature;
+    VolumeFlow: VolumeFlow;
+    Capacitance: Capacitance;
 }
 
 impl Textual for ChargeRate {

@@ -39,6 +39,20 @@ pub enum Dimension {
     Time,
     /// Ratio.
     Ratio,
+    /// Plane angle: latitude, tilt.
+    Angle,
+    /// Power of sunlight on an area.
+    Irradiance,
+    /// Energy of sunlight on an area.
+    Irradiation,
+    /// Voltage per temperature difference.
+    VoltagePerTemperature,
+    /// Ratio per temperature difference.
+    RatioPerTemperature,
+    /// Volume of air in a time.
+    VolumeFlow,
+    /// Capacitance.
+    Capacitance,
 }
 
 impl Dimension {
@@ -60,6 +74,13 @@ impl Dimension {
             Rate => "a charge rate",
             Time => "a time",
             Ratio => "a ratio",
+            Angle => "an angle",
+            Irradiance => "an irradiance",
+            Irradiation => "an irradiation",
+            VoltagePerTemperature => "a voltage per kelvin",
+            RatioPerTemperature => "a ratio per kelvin",
+            VolumeFlow => "a flow of air",
+            Capacitance => "a capacitance",
         }
     }
 
@@ -81,6 +102,13 @@ impl Dimension {
             Rate => "'0.2 /h'",
             Time => "'2.5 h', '90 min' or '0.1 s'",
             Ratio => "'85 %' or '0.85'",
+            Angle => "'54.5 deg'",
+            Irradiance => "'800 W/m2'",
+            Irradiation => "'3.4 kWh/m2'",
+            VoltagePerTemperature => "'-5 mV/K'",
+            RatioPerTemperature => "'-0.3 %/K'",
+            VolumeFlow => "'12 m3/h'",
+            Capacitance => "'4700 uF'",
         }
     }
 }
@@ -152,6 +180,23 @@ pub(super) const UNITS: &[Unit] = &[
     unit("d", Time, 86_400.0),
     unit("", Ratio, 1.0),
     unit("%", Ratio, 1e-2),
+    unit("rad", Angle, 1.0),
+    unit("deg", Angle, 1.745_329_251_994_329_5e-2),
+    unit("W/m2", Irradiance, 1.0),
+    unit("kW/m2", Irradiance, 1e3),
+    unit("J/m2", Irradiation, 1.0),
+    unit("MJ/m2", Irradiation, 1e6),
+    unit("Wh/m2", Irradiation, 3.6e3),
+    unit("kWh/m2", Irradiation, 3.6e6),
+    unit("V/K", VoltagePerTemperature, 1.0),
+    unit("mV/K", VoltagePerTemperature, 1e-3),
+    unit("/K", RatioPerTemperature, 1.0),
+    unit("%/K", RatioPerTemperature, 1e-2),
+    unit("m3/s", VolumeFlow, 1.0),
+    unit("m3/h", VolumeFlow, 1.0 / 3.6e3),
+    unit("F", Capacitance, 1.0),
+    unit("mF", Capacitance, 1e-3),
+    unit("uF", Capacitance, 1e-6),
 ];
 
 /// The unit of a symbol within one dimension.
@@ -184,6 +229,7 @@ fn fold(symbol: &str) -> impl Iterator<Item = char> + '_ {
             '\u{b5}' | '\u{3bc}' => ('u', ""),     // micro sign, Greek mu
             '°' => ('d', "eg"),
             '²' => ('2', ""),
+            '³' => ('3', ""),
             '·' | '⋅' => ('.', ""),
             other => (other, ""),
         };
@@ -217,9 +263,10 @@ mod tests {
     #[test]
     fn factors_agree_with_uom() {
         use uom::si::{
-            area::*, electric_charge::*, electric_current::*, electric_potential::*,
-            electrical_resistance::*, electrical_resistivity::*, energy::*, length::*, power::*, ratio::*,
-            time::*,
+            angle::*, area::*, capacitance::*, electric_charge::*, electric_current::*,
+            electric_potential::*, electrical_resistance::*, electrical_resistivity::*, energy::*,
+            heat_flux_density::*, length::*, power::*, radiant_exposure::*, ratio::*,
+            temperature_coefficient::*, time::*, volume_rate::*,
         };
         use uom::si::{f64::ThermodynamicTemperature, thermodynamic_temperature as tt};
         macro_rules! check {
@@ -244,6 +291,10 @@ mod tests {
             "mΩ" Resistance ElectricalResistance milliohm; "µΩ" Resistance ElectricalResistance microohm;
             "Ω·mm²/m" Resistivity ElectricalResistivity ohm_square_millimeter_per_meter;
             "h" Time Time hour; "min" Time Time minute; "d" Time Time day; "%" Ratio Ratio percent;
+            "°" Angle Angle degree; "W/m²" Irradiance HeatFluxDensity watt_per_square_meter;
+            "Wh/m²" Irradiation RadiantExposure watt_hour_per_square_meter;
+            "/K" RatioPerTemperature TemperatureCoefficient per_kelvin;
+            "m³/h" VolumeFlow VolumeRate cubic_meter_per_hour; "µF" Capacitance Capacitance microfarad;
         }
         for x in [-40.0, 0.0, 20.0, 25.0, 77.3, 250.0] {
             let unit = find("°C", Temperature).unwrap();
