@@ -2,7 +2,7 @@
 
 use uom::si::electrical_resistance::ohm;
 
-use super::model::BankEntry;
+use super::system::BankEntry;
 use crate::battery::{fault_voltage, resistance_rise, short_circuit_estimate};
 use crate::network::Source;
 use crate::quantity::{ElectricPotential, ElectricalResistance};
@@ -17,9 +17,10 @@ pub(super) struct Ends {
 }
 
 pub(super) fn ends(bank: &BankEntry) -> Ends {
-    let cell = fault_voltage(bank.chemistry);
+    let Some(chemistry) = bank.chemistry() else { return limited(bank) };
+    let cell = fault_voltage(chemistry);
     let volts = |per_cell: f64| -> ElectricPotential {
-        bank.nominal * (per_cell / bank.chemistry.nominal_cell().value)
+        bank.nominal * (per_cell / chemistry.nominal_cell().value)
     };
     let full = volts(cell.greatest_V);
     let from_current = bank.short_circuit.map(|amps| full / amps);
@@ -28,7 +29,7 @@ pub(super) fn ends(bank: &BankEntry) -> Ends {
         (Some(a), Some(b)) => Some(if a <= b { (a, b) } else { (b, a) }),
         (a, b) => a.or(b).map(|r| (r, r)),
     };
-    let estimate = short_circuit_estimate(bank.chemistry, bank.capacity).ok();
+    let estimate = short_circuit_estimate(chemistry, bank.capacity).ok();
     let by_thumb = stated.is_none() && estimate.is_some();
     let resistance: Option<(ElectricalResistance, ElectricalResistance)> =
         stated.or_else(|| estimate.map(|e| (full / e.upper, full / e.usual)));
@@ -38,7 +39,16 @@ pub(super) fn ends(bank: &BankEntry) -> Ends {
     Ends {
         strongest: resistance.map(|(low, _)| source(full, low)),
         weakest: resistance
-            .map(|(_, high)| source(volts(cell.least_V), high * resistance_rise(bank.chemistry).product())),
+            .map(|(_, high)| source(volts(cell.least_V), high * resistance_rise(chemistry).product())),
         by_thumb,
     }
+}
+
+/// A source that limits itself: no more than its limit flows, into whatever resistance.
+fn limited(feed: &BankEntry) -> Ends {
+    let source = feed
+        .limit
+        .filter(|limit| limit.value > 0.0)
+        .map(|limit| Source { emf: feed.highest, resistance: feed.highest / limit });
+    Ends { strongest: source, weakest: source, by_thumb: false }
 }

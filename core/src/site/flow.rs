@@ -11,7 +11,8 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::fault::Fault;
 use super::graph::{Graph, Item, Tree, path_to};
-use super::model::{BankEntry, LoadKind, Return, Site};
+use super::model::{LoadKind, Return};
+use super::system::{BankEntry, Site};
 use super::plan::sources;
 use super::state::{Solver, State};
 use crate::cable::{Conductor, linear_resistance};
@@ -197,7 +198,11 @@ impl Flows {
                 }
                 // A feeder of boards is held to the stricter limit of panel feeders (R17).
                 Item::Board(_) => flow.usage = LoadUse::Critical,
-                Item::Bank(_) => {}
+                Item::ConverterInput(i) => {
+                    flow.least_voltage =
+                        site.converters.get(i).and_then(|c| c.least).map(|v| v.get::<volt>());
+                }
+                Item::Bank(_) | Item::Charger(_) | Item::ControllerInput(_) => {}
             }
         }
     }

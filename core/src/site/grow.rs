@@ -8,7 +8,7 @@ use uom::si::electric_current::ampere;
 
 use super::flow::Flows;
 use super::graph::{Item, Tree};
-use super::model::Site;
+use super::system::Site;
 use super::plan::{Draft, Planned};
 use super::reach::Reach;
 use super::read::{Problem, Problems};

@@ -1,6 +1,7 @@
 //! A whole site: its document, its checks, its report.
 
 mod bank;
+mod complete;
 mod fault;
 mod finding;
 mod flow;
@@ -8,6 +9,7 @@ mod graph;
 mod grow;
 mod model;
 mod offers;
+mod parts;
 mod plan;
 mod plant;
 mod reach;
@@ -15,13 +17,19 @@ mod read;
 mod report;
 mod smaller;
 mod state;
+mod system;
 mod text;
 mod wiring;
 
 pub use finding::{Finding, Severity};
 pub use model::{
-    BankEntry, Board, CircuitEntry, DeviceEntry, Earthing, End, InverterEntry, JointEntry, LoadEntry,
-    LoadKind, Part, PartKind, Pole, Return, Site, Stock, StockCable, StockDevice, StockLug,
+    Board, CircuitEntry, DeviceEntry, Document, Earthing, End, JointEntry, LoadEntry, LoadKind, LoadUseTime,
+    Part, PartKind, Pole, Return, Stock, StockCable, StockDevice, StockLug,
+};
+pub use parts::{
+    ArrayPart, BankPart, Charging, ControllerKind, ControllerPart, ConverterPart, GeneratorKind,
+    GeneratorPart, InverterPart, ModulePart, Monitoring, Place, Reading, Room, Sense, StockBattery, TakeOff,
+    Weather,
 };
 pub use read::{Problem, Problems, read, read_bytes};
 pub use report::{CircuitLine, DeviceLine, Purchase, Report, inspect};

@@ -8,7 +8,8 @@ use uom::si::electric_current::ampere;
 use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole, Site};
+use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole};
+use super::system::{Site};
 use super::plan::{Draft, Fitted};
 use super::read::Problem;
 use crate::cable::{

@@ -6,7 +6,7 @@ use alloc::vec::Vec;
 use uom::si::electric_current::ampere;
 
 use super::graph::{Item, Tree};
-use super::model::Site;
+use super::system::Site;
 use super::plan::Planned;
 
 /// What all devices of a side together let pass towards each circuit, A: infinite where a source is not guarded.

@@ -9,7 +9,7 @@ use alloc::vec::Vec;
 use uom::si::electric_potential::volt;
 
 use super::flow::Flows;
-use super::model::Site;
+use super::system::Site;
 use super::offers::Offers;
 use super::plan::{Draft, Planned, Reason, Refused};
 use crate::cable::Conductor;

@@ -11,7 +11,8 @@ use uom::si::length::meter;
 
 use super::finding::{Findings, Severity, digits, of_check};
 use super::graph::{Item, Tree};
-use super::model::{CircuitEntry, Return, Site};
+use super::model::{CircuitEntry, Return};
+use super::system::{Site};
 use super::plan::{Fitted, Plan, Planned};
 use super::plant::{banks, boards, consumers};
 use super::reach::Reach;
@@ -569,6 +570,9 @@ pub(super) fn name_of(site: &Site, item: Item) -> &str {
         Item::Board(i) => site.boards.get(i).map(|x| x.name.as_str()),
         Item::Load(i) => site.loads.get(i).map(|x| x.name.as_str()),
         Item::Inverter(i) => site.inverters.get(i).map(|x| x.name.as_str()),
+        Item::Charger(i) => site.chargers.get(i).map(|x| x.name.as_str()),
+        Item::ControllerInput(i) => site.controllers.get(i).map(|x| x.name.as_str()),
+        Item::ConverterInput(i) => site.converters.get(i).map(|x| x.name.as_str()),
     }
     .unwrap_or("")
 }
@@ -580,5 +584,8 @@ pub(super) fn stud_of(site: &Site, item: Item) -> Option<Stud> {
         Item::Board(i) => site.boards.get(i)?.stud,
         Item::Load(i) => site.loads.get(i)?.stud,
         Item::Inverter(i) => site.inverters.get(i)?.stud,
+        Item::Charger(i) => site.chargers.get(i)?.stud,
+        Item::ControllerInput(i) => site.controllers.get(i)?.stud,
+        Item::ConverterInput(i) => site.converters.get(i)?.stud,
     }
 }

@@ -9,7 +9,7 @@ use core::ops::Range;
 
 use toml::de::{DeTable, DeValue, Error};
 
-use super::keys::PLURAL;
+use super::plant_keys::PLURAL;
 use super::log::{Cut, Log};
 
 /// Above this size the first syntax error must be mended before the rest is listed: a text of a few MiB can
