@@ -9,7 +9,7 @@ use super::checked::{Checked, Outcome};
 use super::run::Run;
 use crate::cable::{Conductor, Material, adiabatic_k};
 use crate::citation::{Citation, Seen};
-use crate::device::{Polarity, Supply};
+use crate::device::{Polarity, Supply, least_let_through_A2s};
 use crate::error::Error;
 use crate::protection::{Earthing, Guard, least_rating};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
@@ -36,6 +36,8 @@ const BY_THUMB: Citation = Citation::new(
 const INSTANTANEOUS_S: f64 = 0.1;
 const INSTANTANEOUS: Citation =
     Citation::new("IEC 60898-1", "instantaneous tripping below 0.1 s", Seen::Recalled);
+
+const LET_THROUGH: Citation = Citation::new("the site file", "let_through", Seen::Stated);
 
 /// What the checks of one run share.
 pub(super) struct Facts<'a> {
@@ -457,7 +459,14 @@ impl Facts<'_> {
             );
         }
         if let Some(stated) = guard.let_through_A2s {
-            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, adiabatic));
+            if stated < least_let_through_A2s(device.family, device.rating) {
+                return missing(
+                    "withstand of the conductor: the stated let_through is less than any such device lets pass",
+                );
+            }
+            // The limit is the law's, but passing it rests on what is stated.
+            let citation = if stated <= bearable { LET_THROUGH } else { adiabatic };
+            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, citation));
         }
         if let Some(times) = device.family.instantaneous_ratio()
             && amps >= times * device.rating.get::<ampere>()

@@ -6,8 +6,10 @@ mod finding;
 mod flow;
 mod graph;
 mod grow;
+mod joints;
 mod model;
 mod offers;
+mod overrides;
 mod plan;
 mod plant;
 mod reach;
@@ -16,6 +18,7 @@ mod report;
 mod smaller;
 mod state;
 mod text;
+mod trust;
 mod wiring;
 
 pub use finding::{Finding, Severity};

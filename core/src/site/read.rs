@@ -10,6 +10,7 @@ mod equipment;
 mod keys;
 mod log;
 mod stock;
+mod surroundings;
 mod syntax;
 #[cfg(test)]
 mod tests;

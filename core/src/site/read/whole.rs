@@ -20,6 +20,7 @@ use super::keys::{
 };
 use super::log::{Cut, Log, nearest};
 use super::stock;
+use super::surroundings;
 use super::syntax;
 use crate::quantity::ThermodynamicTemperature;
 use crate::rules::{Overrides, Rules};
@@ -94,6 +95,10 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
     let boards = read_all(text, log, &BOARD, &boards, equipment::board);
     let inverters = read_all(text, log, &INVERTER, &inverters, equipment::inverter);
     let loads = read_all(text, log, &LOAD, &loads, equipment::load);
+    let surroundings = head.as_ref().and_then(|head| Some(head.as_ref()?.3));
+    for found in &circuits {
+        surroundings::check(surroundings, *found, log);
+    }
     let mut reader = Circuits::new(text, &circuits);
     let circuits: Vec<_> = circuits.iter().map(|found| reader.circuit(log, *found)).collect();
 
