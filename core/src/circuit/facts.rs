@@ -459,7 +459,7 @@ impl Facts<'_> {
             );
         }
         if let Some(stated) = guard.let_through_A2s {
-            if stated < least_let_through_A2s(device.family, device.rating) {
+            if stated < least_let_through_A2s(device.family, device.rating).0 {
                 return missing(
                     "withstand of the conductor: the stated let_through is less than any such device lets pass",
                 );

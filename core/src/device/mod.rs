@@ -12,7 +12,7 @@ use crate::catalogue::Entry;
 
 pub use conventional::{Band, Start};
 pub use family::{Family, FamilyData};
-pub(crate) use let_through::{LEAST_LET_THROUGH, least_let_through_A2s};
+pub(crate) use let_through::least_let_through_A2s;
 pub use operating::{ConventionalCurrents, continuous_current, conventional_currents};
 pub use piece::{Device, Polarity, Supply};
 

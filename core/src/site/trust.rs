@@ -15,7 +15,7 @@ use super::graph::Graph;
 use super::model::{CircuitEntry, Return, Site};
 use super::plan::{Fitted, Plan, Planned};
 use crate::circuit::{Run, capacity};
-use crate::device::{LEAST_LET_THROUGH, least_let_through_A2s};
+use crate::device::least_let_through_A2s;
 use crate::quantity::Power;
 use crate::rules::Key;
 
@@ -52,7 +52,7 @@ pub(super) fn cooler(site: &Site, circuit: &CircuitEntry, planned: &Planned, fou
 /// A stated let-through that no such device reaches.
 pub(super) fn let_through(fitted: &Fitted, place: &str, line: u32, found: &mut Findings) {
     let device = fitted.guard.device;
-    let least = least_let_through_A2s(device.family, device.rating);
+    let (least, source) = least_let_through_A2s(device.family, device.rating);
     if let Some(stated) = fitted.guard.let_through_A2s.filter(|stated| *stated < least) {
         found.add(
             Severity::Nonconforming,
@@ -67,7 +67,7 @@ pub(super) fn let_through(fitted: &Fitted, place: &str, line: u32, found: &mut F
                 digits(device.rating.get::<ampere>()),
                 digits(least)
             ),
-            Some(LEAST_LET_THROUGH),
+            Some(source),
             "state the I²t of the maker's sheet at the greatest prospective current, on DC",
         );
     }
