@@ -254,3 +254,15 @@ fn a_stated_let_through_never_conforms_by_itself() {
     assert!(!implausible.iter().any(|l| l.contains("passed") || l.contains("conforms")), "{implausible:?}");
     assert!(implausible.iter().any(|l| l.contains("<withstand-not-checked>")), "{implausible:?}");
 }
+
+/// What is printed of a run under overrides: nothing conforms to a standard by the user's own factor.
+#[test]
+fn a_capacity_by_the_users_own_factor_is_within_what_he_states() {
+    let text = own("iec", "bundling = 0.85").with("circuit", "bundled = 4").to_string();
+    let site = read(&text).unwrap_or_else(|problems| panic!("{problems}"));
+    let printed = inspect(&site).unwrap_or_else(|problems| panic!("{problems}")).to_string();
+    for what in ["design current Ib against", "device against its conductor", "current I2 at which"] {
+        let line = printed.lines().find(|l| l.contains(what) && l.contains("passed")).unwrap_or(what);
+        assert!(line.contains("within the stated value (stated by the user"), "{line}");
+    }
+}

@@ -238,7 +238,7 @@ impl Facts<'_> {
             Ok(ampacity) => {
                 let (limit, by_terminal) = self.device_limit(ampacity);
                 let citation = match worst_citation(ampacity) {
-                    recalled if recalled.seen == Seen::Recalled => recalled,
+                    worse if matches!(worse.seen, Seen::Recalled | Seen::Stated) => worse,
                     _ => limit.citation,
                 };
                 Checked::at_most(
@@ -310,7 +310,7 @@ impl Facts<'_> {
             limit.value * ampacity.corrected.get::<ampere>(),
             "A",
             what,
-            limit.citation,
+            own_factor(ampacity).unwrap_or(limit.citation),
         ))
     }
 
@@ -560,10 +560,18 @@ impl Facts<'_> {
     }
 }
 
-/// A recalled cell or factor marks the whole result.
+/// A factor of the user's own marks the whole result, and so does a recalled cell or factor.
 fn worst_citation(ampacity: &Ampacity) -> Citation {
+    if let Some(stated) = own_factor(ampacity) {
+        return stated;
+    }
     let recalled = ampacity.factors.iter().any(|f| f.citation.seen == Seen::Recalled);
     if recalled { ampacity.base.citation.recalled() } else { ampacity.base.citation }
+}
+
+/// Source of a factor that the user states in place of the set's.
+fn own_factor(ampacity: &Ampacity) -> Option<Citation> {
+    ampacity.factors.iter().map(|f| f.citation).find(|c| c.seen == Seen::Stated)
 }
 
 /// A table without an answer is a check not made.
