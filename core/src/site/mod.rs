@@ -7,8 +7,10 @@ mod finding;
 mod flow;
 mod graph;
 mod grow;
+mod joints;
 mod model;
 mod offers;
+mod overrides;
 mod parts;
 mod plan;
 mod plant;
@@ -19,6 +21,7 @@ mod smaller;
 mod state;
 mod system;
 mod text;
+mod trust;
 mod wiring;
 
 pub use finding::{Finding, Severity};

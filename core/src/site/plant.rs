@@ -6,6 +6,7 @@ use alloc::string::ToString;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
+use super::bank::cells;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
 use super::system::{BankEntry, Site};
@@ -226,7 +227,7 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
 /// What a bank states against what its cells do (R11): every voltage check rests on it.
 fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
     let Some(chemistry) = bank.chemistry() else { return };
-    let cells = bank.nominal.get::<volt>() / chemistry.nominal_cell().get::<volt>();
+    let cells = cells(bank, chemistry).0;
     let limits = cell_voltages(chemistry);
     let (highest, cut_off) = (bank.highest.get::<volt>() / cells, bank.cut_off.get::<volt>() / cells);
     if highest < limits.charge_V {
@@ -276,7 +277,7 @@ fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
                 format!(
                     "short_circuit {} A stands beside a resistance that gives {} A",
                     digits(amps.get::<ampere>()),
-                    digits(crate::circuit::bound(by_resistance))
+                    digits(crate::circuit::upper_bound(by_resistance))
                 ),
                 None,
                 "state the one that the maker gives or that was measured",

@@ -13,6 +13,7 @@ mod plant;
 mod plant_keys;
 mod references;
 mod stock;
+mod surroundings;
 mod syntax;
 mod times;
 #[cfg(test)]

@@ -425,7 +425,8 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
             .to_string(),
     );
     lines.push(
-        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), metal of full area at the lowest ambient, \
+        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), or just charged at its highest voltage where that is \
+         more, metal of full area at the lowest ambient, \
          no joints; least fault: one bank alone, empty (1.98 V a lead-acid cell), its resistance raised for \
          discharge, cold and age (4.5 times lead-acid, 9 times lithium, 3.4 times nickel-cadmium; common practice), \
          conductors at their rated temperature, joints in"

@@ -21,7 +21,7 @@ pub(super) fn stated(document: &Document, _site: &Site, stated: &BankPart) -> Re
         line: part.line,
         kind: FeedKind::Battery(chemistry),
         series: 1,
-        cells: 1,
+        cells: 0,
         limit: None,
         nominal,
         capacity: part.capacity.ok_or_else(|| missing("key 'capacity' is missing"))?,

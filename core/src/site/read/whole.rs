@@ -23,6 +23,7 @@ use super::plant;
 use super::plant_keys::{ARRAY, BANK, CONTROLLER, CONVERTER, GENERATOR, INVERTER, LOAD, READING, SITE, STOCK, TOP, WEATHER};
 use super::references;
 use super::stock;
+use super::surroundings;
 use super::syntax;
 use super::times;
 use crate::quantity::ThermodynamicTemperature;
@@ -116,6 +117,10 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Document> {
     let boards = read_all(text, log, &BOARD, &boards, equipment::board);
     let inverters = read_all(text, log, &INVERTER, &inverters, plant::inverter);
     let loads = read_all(text, log, &LOAD, &loads, equipment::load);
+    let surroundings = head.as_ref().and_then(|head| Some(head.as_ref()?.3));
+    for found in &circuits {
+        surroundings::check(surroundings, *found, log);
+    }
     let mut reader = Circuits::new(text, &circuits);
     let circuits: Vec<_> = circuits.iter().map(|found| reader.circuit(log, *found)).collect();
 
