@@ -49,9 +49,8 @@ fn greatest_emf(bank: &BankEntry, chemistry: Chemistry, cell_V: f64) -> Electric
 pub(super) fn ends(bank: &BankEntry) -> Ends {
     let Some(chemistry) = bank.chemistry() else { return limited(bank) };
     let cell = fault_voltage(chemistry);
-    let volts = |per_cell: f64| -> ElectricPotential {
-        bank.nominal * (per_cell / chemistry.nominal_cell().value)
-    };
+    let volts =
+        |per_cell: f64| -> ElectricPotential { bank.nominal * (per_cell / chemistry.nominal_cell().value) };
     let rested = volts(cell.greatest_V);
     let full = greatest_emf(bank, chemistry, cell.greatest_V);
     // Stated twice, the stronger source counts for the greatest current, the weaker for the least.

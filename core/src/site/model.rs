@@ -7,11 +7,14 @@ use crate::cable::{Class, Coating, Insulation, JointKind, Material, Stud};
 use crate::device::{Family, Polarity, Supply};
 pub use crate::protection::{Earthing, End, Pole};
 use crate::quantity::{
-    ConductorSize, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power,
-    Ratio, ThermodynamicTemperature, Time,
+    ConductorSize, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio,
+    ThermodynamicTemperature, Time,
 };
 
-use super::parts::{ArrayPart, BankPart, ControllerPart, ConverterPart, GeneratorPart, InverterPart, ModulePart, Place, Reading, StockBattery, Weather};
+use super::parts::{
+    ArrayPart, BankPart, ControllerPart, ConverterPart, GeneratorPart, InverterPart, ModulePart, Place,
+    Reading, StockBattery, Weather,
+};
 use crate::rules::{Installation, LoadUse, Rules, Space};
 
 /// The whole document, as it is stated.

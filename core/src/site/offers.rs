@@ -9,9 +9,9 @@ use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole};
-use super::system::{Site};
 use super::plan::{Draft, Fitted};
 use super::read::Problem;
+use super::system::Site;
 use crate::cable::{
     Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance,
 };

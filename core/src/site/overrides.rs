@@ -8,9 +8,9 @@ use uom::si::length::meter;
 use uom::si::ratio::percent;
 
 use super::finding::{Findings, Severity, digits};
-use super::model::{CircuitEntry};
-use super::system::Site;
+use super::model::CircuitEntry;
 use super::plan::{Plan, Planned};
+use super::system::Site;
 use crate::circuit::{Run, capacity};
 use crate::rules::{Overrides, Rules};
 

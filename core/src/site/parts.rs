@@ -9,8 +9,8 @@ use crate::battery::Chemistry;
 use crate::cable::Stud;
 use crate::quantity::{
     Angle, Area, Capacitance, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance,
-    Energy, Irradiation, Length, Power, Ratio, RatioPerTemperature,
-    ThermodynamicTemperature, Time, VoltagePerTemperature, VolumeFlow,
+    Energy, Irradiation, Length, Power, Ratio, RatioPerTemperature, ThermodynamicTemperature, Time,
+    VoltagePerTemperature, VolumeFlow,
 };
 
 /// Where the site lies, and what is expected of it: the optional keys of `[site]`.

@@ -15,9 +15,9 @@ mod references;
 mod stock;
 mod surroundings;
 mod syntax;
-mod times;
 #[cfg(test)]
 mod tests;
+mod times;
 mod values;
 mod ways;
 mod whole;

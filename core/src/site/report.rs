@@ -9,13 +9,13 @@ use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::fault::Fault;
 use super::complete::complete;
+use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
 use super::model::{CircuitEntry, Document, Return};
-use super::system::{Site};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
+use super::system::Site;
 use super::wiring::{findings, name_of, stud_of};
 use crate::battery::Chemistry;
 use crate::cable::{Conductor, Stud};

@@ -11,8 +11,8 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 
 use super::graph::{Item, Node, Tree};
-use super::model::{LoadKind};
-use super::system::{Site};
+use super::model::LoadKind;
+use super::system::Site;
 use crate::error::Error;
 use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power};

@@ -168,4 +168,3 @@ pub(super) struct InverterEntry {
     /// `terminal = "75 degC"`: marked temperature rating.
     pub terminal: Option<ThermodynamicTemperature>,
 }
-

@@ -13,7 +13,11 @@ pub(super) fn take(document: &Document, site: &mut Site, problems: &mut Vec<Prob
     for stated in &document.arrays {
         let place = || format!("[[array]] \"{}\"", stated.name);
         let Some(module) = stock::module(document, stated) else {
-            problems.push(problem(stated.line, place(), "its module is not stated; name one of the stock, or state power, voc, isc, vmp and imp"));
+            problems.push(problem(
+                stated.line,
+                place(),
+                "its module is not stated; name one of the stock, or state power, voc, isc, vmp and imp",
+            ));
             continue;
         };
         let named = stated.controller.as_ref();

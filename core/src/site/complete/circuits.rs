@@ -15,10 +15,10 @@ use crate::site::model::{Board, CircuitEntry, Return};
 use crate::site::system::{ChargerKind, FeedKind, Site};
 
 /// Routes of parts that the document does not even name, m. Common practice, no source; told in the report.
-const BANK_ROUTE_m: f64 = 2.0;
-const INVERTER_ROUTE_m: f64 = 1.5;
-const CONTROLLER_ROUTE_m: f64 = 1.5;
-const ARRAY_ROUTE_m: f64 = 10.0;
+const BANK_ROUTE_M: f64 = 2.0;
+const INVERTER_ROUTE_M: f64 = 1.5;
+const CONTROLLER_ROUTE_M: f64 = 1.5;
+const ARRAY_ROUTE_M: f64 = 10.0;
 
 /// A circuit of which only the ends and the route are known.
 pub(super) fn plain(name: String, from: &str, to: &str, one_way: Length) -> CircuitEntry {
@@ -78,17 +78,11 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
     for bank in site.banks.iter().filter(|b| b.is_battery() && !joined(&b.name)) {
         let part = bank.part.as_ref();
         let to = part.and_then(|p| p.board.clone()).unwrap_or_else(|| board.clone());
-        wish(format!("{} main", bank.name), &bank.name, &to, part.and_then(|p| p.route), BANK_ROUTE_m);
+        wish(format!("{} main", bank.name), &bank.name, &to, part.and_then(|p| p.route), BANK_ROUTE_M);
     }
     for inverter in site.inverters.iter().filter(|i| !joined(&i.name)) {
         let from = inverter.part.board.clone().unwrap_or_else(|| board.clone());
-        wish(
-            format!("{} feed", inverter.name),
-            &from,
-            &inverter.name,
-            inverter.part.route,
-            INVERTER_ROUTE_m,
-        );
+        wish(format!("{} feed", inverter.name), &from, &inverter.name, inverter.part.route, INVERTER_ROUTE_M);
     }
     for load in site.loads.iter().filter(|l| !l.ac && !joined(&l.name)) {
         let from = load.board.clone().unwrap_or_else(|| board.clone());
@@ -97,7 +91,7 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
     for charger in site.chargers.iter().filter(|c| !from_taken.contains(&c.name)) {
         let (stated, route, usual) = match charger.kind {
             ChargerKind::Controller(i) => {
-                site.controllers.get(i).map(|c| (c.board.clone(), c.route, CONTROLLER_ROUTE_m))
+                site.controllers.get(i).map(|c| (c.board.clone(), c.route, CONTROLLER_ROUTE_M))
             }
             ChargerKind::Generator(i) => site.generators.get(i).map(|g| (g.board.clone(), g.route, 0.0)),
         }
@@ -109,12 +103,19 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
         let FeedKind::Array(index) = feed.kind else { continue };
         let Some(array) = site.arrays.get(index) else { continue };
         let Some(controller) = array.controller.and_then(|c| site.controllers.get(c)) else { continue };
-        wish(format!("{} feed", array.part.name), &feed.name, &controller.name, array.part.route, ARRAY_ROUTE_m);
+        wish(
+            format!("{} feed", array.part.name),
+            &feed.name,
+            &controller.name,
+            array.part.route,
+            ARRAY_ROUTE_M,
+        );
     }
     if wishes.is_empty() {
         return;
     }
-    if !site.boards.iter().any(|b| b.name == board) && wishes.iter().any(|w| w.from == board || w.to == board) {
+    if !site.boards.iter().any(|b| b.name == board) && wishes.iter().any(|w| w.from == board || w.to == board)
+    {
         site.boards.push(Board {
             name: board.clone(),
             line: 0,

@@ -118,7 +118,10 @@ fn is_whole(document: &Document) -> bool {
         || !document.generators.is_empty()
         || document.banks.is_empty()
         || document.banks.iter().any(|b| b.capacity.is_none() && b.unit_capacity.is_none())
-        || document.loads.iter().any(|l| l.use_of != super::model::LoadUseTime::default() || l.ac || l.standing)
+        || document
+            .loads
+            .iter()
+            .any(|l| l.use_of != super::model::LoadUseTime::default() || l.ac || l.standing)
 }
 
 /// The parts of the document as far as they are stated.

@@ -7,7 +7,8 @@ use crate::site::parts::{
 
 /// A controller with what its model states.
 pub(super) fn controller(document: &Document, stated: &ControllerPart) -> ControllerPart {
-    let found = stated.model.as_ref().and_then(|name| document.stock.controllers.iter().find(|c| c.name == *name));
+    let found =
+        stated.model.as_ref().and_then(|name| document.stock.controllers.iter().find(|c| c.name == *name));
     found.map_or_else(|| stated.clone(), |model| merged(stated, model))
 }
 
@@ -39,7 +40,8 @@ pub(super) fn merged(stated: &ControllerPart, model: &ControllerPart) -> Control
 
 /// An inverter with what its model states.
 pub(super) fn inverter(document: &Document, stated: &InverterPart) -> InverterPart {
-    let found = stated.model.as_ref().and_then(|name| document.stock.inverters.iter().find(|c| c.name == *name));
+    let found =
+        stated.model.as_ref().and_then(|name| document.stock.inverters.iter().find(|c| c.name == *name));
     found.map_or_else(|| stated.clone(), |model| merged_inverter(stated, model))
 }
 
@@ -65,7 +67,8 @@ pub(super) fn merged_inverter(stated: &InverterPart, model: &InverterPart) -> In
 
 /// The module of an array: its own, or that of the stock it names.
 pub(super) fn module<'a>(document: &'a Document, array: &'a ArrayPart) -> Option<&'a ModulePart> {
-    let named = || array.module.as_ref().and_then(|name| document.stock.modules.iter().find(|m| m.name == *name));
+    let named =
+        || array.module.as_ref().and_then(|name| document.stock.modules.iter().find(|m| m.name == *name));
     array.own_module.as_ref().or_else(named)
 }
 

@@ -233,7 +233,10 @@ impl<'d> Plan<'d> {
         if target.is_ac || matches!(target.kind, Kind::Array | Kind::Generator) {
             let at = wire.to.map_or(wire.at, |(_, at)| at);
             let sentence = if target.is_ac {
-                format!("{} is an AC load: its inverter feeds it, and no circuit of this file", Quoted(target.name))
+                format!(
+                    "{} is an AC load: its inverter feeds it, and no circuit of this file",
+                    Quoted(target.name)
+                )
             } else {
                 format!(
                     "{} is an {} and only gives: write the circuit the other way round, from it",
@@ -290,7 +293,10 @@ impl<'d> Plan<'d> {
         let sentence = match near {
             Some(word) => format!("nothing is named '{}'; did you mean '{}'?", Cut(name), Cut(word)),
             None => {
-                format!("nothing is named '{}'; name a bank, board, inverter, load or source of this file", Cut(name))
+                format!(
+                    "nothing is named '{}'; name a bank, board, inverter, load or source of this file",
+                    Cut(name)
+                )
             }
         };
         log.push(at, place, sentence);

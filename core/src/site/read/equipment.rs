@@ -5,8 +5,8 @@ use alloc::format;
 
 use super::entry::Entry;
 use super::keys::{
-    BUSBAR, CONTINUOUS, COUNT, CURRENT, GREATEST, LEAST, LOAD_KIND, LOAD_KIND_WORDS, LUGS_ON_STUD, POWER, START,
-    STUD, TERMINAL, USE, USE_WORDS,
+    BUSBAR, CONTINUOUS, COUNT, CURRENT, GREATEST, LEAST, LOAD_KIND, LOAD_KIND_WORDS, LUGS_ON_STUD, POWER,
+    START, STUD, TERMINAL, USE, USE_WORDS,
 };
 use super::plant::named;
 use super::plant_keys::{
@@ -58,7 +58,10 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
     if ac {
         for key in [&CURRENT, &START, &LEAST, &GREATEST] {
             if entry.has(key) {
-                entry.problem(key, "it belongs to a load on DC; an AC load states power and start_power".to_owned());
+                entry.problem(
+                    key,
+                    "it belongs to a load on DC; an AC load states power and start_power".to_owned(),
+                );
             }
         }
     } else {

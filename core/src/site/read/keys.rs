@@ -71,7 +71,12 @@ pub(super) struct Key {
     pub(super) range: Range,
 }
 
-pub(super) const fn key(name: &'static str, needed: &'static str, example: &'static str, range: Range) -> Key {
+pub(super) const fn key(
+    name: &'static str,
+    needed: &'static str,
+    example: &'static str,
+    range: Range,
+) -> Key {
     Key { name, needed, example, range }
 }
 

@@ -108,7 +108,10 @@ pub(super) fn bank(entry: &mut Entry<'_, '_>) -> Option<BankPart> {
     if entry.has(&BATTERY) {
         for key in [&CHEMISTRY, &UNIT, &UNIT_CAPACITY] {
             if entry.has(key) {
-                entry.problem(key, "the battery of the stock tells it already; take one of the two out".to_owned());
+                entry.problem(
+                    key,
+                    "the battery of the stock tells it already; take one of the two out".to_owned(),
+                );
             }
         }
     }
@@ -188,7 +191,10 @@ pub(super) fn array(entry: &mut Entry<'_, '_>) -> Option<ArrayPart> {
     let any = NEEDED.iter().any(|key| entry.has(key));
     let mut own_module = None;
     if module.is_some() && any {
-        entry.problem(&MODULE, "the module of the stock tells its values already; take one of the two out".to_owned());
+        entry.problem(
+            &MODULE,
+            "the module of the stock tells its values already; take one of the two out".to_owned(),
+        );
     } else if any {
         for key in NEEDED {
             if !entry.has(key) && !entry.is_excused(&[key]) {
@@ -207,8 +213,11 @@ pub(super) fn array(entry: &mut Entry<'_, '_>) -> Option<ArrayPart> {
             );
             entry.problem(&MODULES, sentence);
         } else if product.is_none() && all % series != 0 {
-            let sentence = format!("{all} modules do not divide into strings of {series}; {} or {} do",
-                all / series * series, (all / series).saturating_add(1).saturating_mul(series));
+            let sentence = format!(
+                "{all} modules do not divide into strings of {series}; {} or {} do",
+                all / series * series,
+                (all / series).saturating_add(1).saturating_mul(series)
+            );
             entry.problem(&MODULES, sentence);
         }
     }
@@ -235,8 +244,7 @@ pub(super) fn array(entry: &mut Entry<'_, '_>) -> Option<ArrayPart> {
 
 pub(super) fn controller(entry: &mut Entry<'_, '_>) -> Option<ControllerPart> {
     let name = entry.name();
-    let nominals =
-        if entry.has(&NOMINALS) { entry.quantities(&NOMINALS) } else { alloc::vec::Vec::new() };
+    let nominals = if entry.has(&NOMINALS) { entry.quantities(&NOMINALS) } else { alloc::vec::Vec::new() };
     Some(ControllerPart {
         name: name?,
         line: entry.line(),

@@ -35,8 +35,10 @@ pub(super) const ALTITUDE: Key =
 pub(super) const AUTONOMY: Key =
     key("autonomy", "a time", "\"5 d\"", Range::new(Allowed::AboveUpTo(0.0, 60.0), "d").scaled(86_400.0));
 pub(super) const CRITICAL: Key = flag("critical");
-pub(super) const LOSSES: Key = key("losses", "a ratio", "\"3 %\"", Range::new(Allowed::Between(0.0, 0.5), ""));
-pub(super) const MARGIN: Key = key("margin", "a ratio", "\"10 %\"", Range::new(Allowed::Between(0.0, 1.0), ""));
+pub(super) const LOSSES: Key =
+    key("losses", "a ratio", "\"3 %\"", Range::new(Allowed::Between(0.0, 0.5), ""));
+pub(super) const MARGIN: Key =
+    key("margin", "a ratio", "\"10 %\"", Range::new(Allowed::Between(0.0, 1.0), ""));
 pub(super) const BONDS: Key = key("bonds", "a whole number", "1", count(0.0, 20.0));
 pub(super) const BONDING: Key = key("bonding", "a conductor size", "\"16 mm2\"", ANY);
 pub(super) const MONITORING: Key = key("monitoring", "a kind of monitoring", "\"insulation\"", ANY);
@@ -45,8 +47,10 @@ pub(super) const SURGE_PROTECTION: Key = flag("surge_protection");
 pub(super) const MAST: Key = flag("mast");
 
 // [weather]
-pub(super) const IN_PLANE: Key = key("in_plane", "a list of twelve irradiations, January first", "\"2.1 kWh/m2\"", SUN);
-pub(super) const MEANS: Key = key("temperature", "a list of twelve temperatures, January first", "\"4 degC\"", AIR);
+pub(super) const IN_PLANE: Key =
+    key("in_plane", "a list of twelve irradiations, January first", "\"2.1 kWh/m2\"", SUN);
+pub(super) const MEANS: Key =
+    key("temperature", "a list of twelve temperatures, January first", "\"4 degC\"", AIR);
 pub(super) const COLDEST_MORNING: Key = key("coldest_morning", "a temperature", "\"-25 degC\"", AIR);
 
 // [[bank]]
@@ -75,8 +79,12 @@ pub(super) const MIXED: Key = flag("mixed");
 pub(super) const DATA_LINK: Key = flag("data_link");
 pub(super) const OPENS_UNDER_CHARGE: Key = flag("opens_under_charge");
 pub(super) const ROOM: Key = key("space", "a space", "\"room\"", ANY);
-pub(super) const AIR_FLOW: Key =
-    key("air", "a flow of air", "\"5 m3/h\"", Range::new(Allowed::Between(0.0, 1e5), "m3/h").scaled(1.0 / 3600.0));
+pub(super) const AIR_FLOW: Key = key(
+    "air",
+    "a flow of air",
+    "\"5 m3/h\"",
+    Range::new(Allowed::Between(0.0, 1e5), "m3/h").scaled(1.0 / 3600.0),
+);
 pub(super) const OPENING: Key =
     key("opening", "an area", "\"150 cm2\"", Range::new(Allowed::Between(0.0, 1e6), "cm2").scaled(1e-4));
 pub(super) const ROUTE: Key = key("route", "a length", "\"12 m\"", METRES);
@@ -100,13 +108,17 @@ pub(super) const VOC: Key = key("voc", "a voltage", "\"22.1 V\"", VOLTS);
 pub(super) const ISC: Key = key("isc", "a current", "\"7.3 A\"", AMPERES);
 pub(super) const VMP: Key = key("vmp", "a voltage", "\"17.6 V\"", VOLTS);
 pub(super) const IMP: Key = key("imp", "a current", "\"6.8 A\"", AMPERES);
-pub(super) const VOC_COEFFICIENT: Key = key("voc_coefficient", "a ratio per kelvin", "\"-0.3 %/K\"", COEFFICIENT);
-pub(super) const ISC_COEFFICIENT: Key = key("isc_coefficient", "a ratio per kelvin", "\"0.05 %/K\"", COEFFICIENT);
-pub(super) const POWER_COEFFICIENT: Key = key("power_coefficient", "a ratio per kelvin", "\"-0.4 %/K\"", COEFFICIENT);
+pub(super) const VOC_COEFFICIENT: Key =
+    key("voc_coefficient", "a ratio per kelvin", "\"-0.3 %/K\"", COEFFICIENT);
+pub(super) const ISC_COEFFICIENT: Key =
+    key("isc_coefficient", "a ratio per kelvin", "\"0.05 %/K\"", COEFFICIENT);
+pub(super) const POWER_COEFFICIENT: Key =
+    key("power_coefficient", "a ratio per kelvin", "\"-0.4 %/K\"", COEFFICIENT);
 pub(super) const NOCT: Key = key("noct", "a temperature", "\"45 degC\"", Range::celsius(20.0, 100.0));
 pub(super) const SERIES_FUSE: Key = key("series_fuse", "a current", "\"15 A\"", AMPERES);
 pub(super) const GREATEST_VOLTAGE: Key = key("greatest_voltage", "a voltage", "\"600 V\"", VOLTS);
-pub(super) const REAR_GAIN: Key = key("rear_gain", "a ratio", "\"10 %\"", Range::new(Allowed::Between(0.0, 0.5), ""));
+pub(super) const REAR_GAIN: Key =
+    key("rear_gain", "a ratio", "\"10 %\"", Range::new(Allowed::Between(0.0, 0.5), ""));
 pub(super) const CELLS: Key = key("cells", "a whole number", "36", count(1.0, 400.0));
 pub(super) const SHELF_COUNT: Key = key("count", "a whole number", "4", count(0.0, 100_000.0));
 pub(super) const MODULES: Key = key("modules", "a whole number", "6", WHOLE);
@@ -171,16 +183,21 @@ pub(super) const PAST_DISCONNECT: Key = flag("past_disconnect");
 // Readings
 pub(super) const MEASURED_AT: Key = key("at", "the name of what was measured", "\"house\"", ANY);
 pub(super) const ON: Key = key("on", "a list of loads", "[\"water pump\"]", ANY);
-pub(super) const READ_VOLTS: Key = key("volts", "a voltage", "\"24.6 V\"", Range::new(Allowed::Between(0.0, 1500.0), "V"));
-pub(super) const READ_DROP: Key = key("drop", "a voltage", "\"0.35 V\"", Range::new(Allowed::Between(0.0, 1500.0), "V"));
+pub(super) const READ_VOLTS: Key =
+    key("volts", "a voltage", "\"24.6 V\"", Range::new(Allowed::Between(0.0, 1500.0), "V"));
+pub(super) const READ_DROP: Key =
+    key("drop", "a voltage", "\"0.35 V\"", Range::new(Allowed::Between(0.0, 1500.0), "V"));
 pub(super) const READ_AMPS: Key =
     key("amps", "a current", "\"12.4 A\"", Range::new(Allowed::Between(0.0, 100_000.0), "A"));
-pub(super) const READ_TEMPERATURE: Key = key("temperature", "a temperature", "\"25 degC\"", Range::celsius(-90.0, 400.0));
+pub(super) const READ_TEMPERATURE: Key =
+    key("temperature", "a temperature", "\"25 degC\"", Range::celsius(-90.0, 400.0));
 pub(super) const DENSITY: Key =
     key("density", "a number", "1.225", Range::new(Allowed::Between(1.0, 1.4), ""));
-pub(super) const REST: Key = key("rest", "a time", "\"4 h\"", Range::new(Allowed::Between(0.0, 1000.0), "h").scaled(3600.0));
+pub(super) const REST: Key =
+    key("rest", "a time", "\"4 h\"", Range::new(Allowed::Between(0.0, 1000.0), "h").scaled(3600.0));
 pub(super) const DELIVERED: Key = key("delivered", "a charge", "\"60 Ah\"", AMPERE_HOURS);
-pub(super) const ACCURACY: Key = key("accuracy", "a ratio", "\"0.5 %\"", Range::new(Allowed::Between(0.0, 0.2), ""));
+pub(super) const ACCURACY: Key =
+    key("accuracy", "a ratio", "\"0.5 %\"", Range::new(Allowed::Between(0.0, 0.2), ""));
 pub(super) const RESOLUTION: Key =
     key("resolution", "a voltage", "\"10 mV\"", Range::new(Allowed::AboveUpTo(0.0, 10.0), "V"));
 
@@ -491,7 +508,16 @@ pub(super) const TOP: [(&str, &str); 15] = [
 
 /// Sections that may stand several times.
 pub(super) const PLURAL: [&str; 10] = [
-    "bank", "array", "controller", "generator", "converter", "board", "inverter", "load", "circuit", "reading",
+    "bank",
+    "array",
+    "controller",
+    "generator",
+    "converter",
+    "board",
+    "inverter",
+    "load",
+    "circuit",
+    "reading",
 ];
 
 pub(super) const MONITORING_WORDS: Words<Monitoring> = &[

@@ -18,17 +18,18 @@ const LABEL: f64 = 0.1;
 pub(super) fn check(document: &Document, log: &mut Log) {
     let banks = || document.banks.iter().map(|b| b.name.as_str());
     let boards = || document.boards.iter().map(|b| b.name.as_str());
-    let mut refer = |line: u32, place: String, key: &str, name: Option<&String>, what: &str, known: &[&str]| {
-        let Some(name) = name else { return };
-        if known.contains(&name.as_str()) {
-            return;
-        }
-        let sentence = match nearest(name, known.iter().copied()) {
-            Some(word) => format!("nothing is named '{}'; did you mean '{word}'?", Cut(name)),
-            None => format!("nothing is named '{}'; name {what} of this file", Cut(name)),
+    let mut refer =
+        |line: u32, place: String, key: &str, name: Option<&String>, what: &str, known: &[&str]| {
+            let Some(name) = name else { return };
+            if known.contains(&name.as_str()) {
+                return;
+            }
+            let sentence = match nearest(name, known.iter().copied()) {
+                Some(word) => format!("nothing is named '{}'; did you mean '{word}'?", Cut(name)),
+                None => format!("nothing is named '{}'; name {what} of this file", Cut(name)),
+            };
+            log.push_line(line, format!("{place}, {key}"), sentence);
         };
-        log.push_line(line, format!("{place}, {key}"), sentence);
-    };
     let banks: alloc::vec::Vec<&str> = banks().collect();
     let boards: alloc::vec::Vec<&str> = boards().collect();
     let stock = &document.stock;
@@ -48,7 +49,14 @@ pub(super) fn check(document: &Document, log: &mut Log) {
     let models: alloc::vec::Vec<&str> = stock.controllers.iter().map(|c| c.name.as_str()).collect();
     for controller in &document.controllers {
         let place = || format!("[[controller]] {}", Quoted(&controller.name));
-        refer(controller.line, place(), "model", controller.model.as_ref(), "a [[stock.controller]]", &models);
+        refer(
+            controller.line,
+            place(),
+            "model",
+            controller.model.as_ref(),
+            "a [[stock.controller]]",
+            &models,
+        );
         refer(controller.line, place(), "bank", controller.bank.as_ref(), "a bank", &banks);
         refer(controller.line, place(), "board", controller.board.as_ref(), "a board", &boards);
     }
@@ -108,7 +116,8 @@ fn readings(document: &Document, log: &mut Log) {
 
 /// The coldest morning is no warmer than the site's least.
 fn ambient(document: &Document, log: &mut Log) {
-    let Some((weather, coldest)) = document.weather.as_ref().and_then(|w| Some((w, w.coldest_morning?))) else {
+    let Some((weather, coldest)) = document.weather.as_ref().and_then(|w| Some((w, w.coldest_morning?)))
+    else {
         return;
     };
     if coldest > document.ambient.1 {

@@ -8,7 +8,10 @@ use super::keys::{
 };
 use super::log::Log;
 use super::plant;
-use super::plant_keys::{BATTERIES, STOCK, STOCK_BATTERY, STOCK_CONTROLLER, STOCK_CONTROLLERS, STOCK_INVERTER, STOCK_INVERTERS, STOCK_MODULE, STOCK_MODULES};
+use super::plant_keys::{
+    BATTERIES, STOCK, STOCK_BATTERY, STOCK_CONTROLLER, STOCK_CONTROLLERS, STOCK_INVERTER, STOCK_INVERTERS,
+    STOCK_MODULE, STOCK_MODULES,
+};
 use crate::cable::{Class, Coating, Material};
 use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
 

@@ -10,9 +10,9 @@ use super::keys::Key;
 use super::log::{Cut, nearest};
 use super::plant::named;
 use super::plant_keys::{
-    ACCURACY, ALTITUDE, AT_TIMES, AUTONOMY, BONDING, BONDS, COLDEST_MORNING, COVERED, CRITICAL, DAYS_PER_WEEK,
-    DELIVERED, DENSITY, DUTY, DUTY_HOT, HOURS, IN_PLANE, LATITUDE, LONGITUDE, LOSSES, MARGIN, MAST, MEANS,
-    MEASURED_AT, MONITORING, MONITORING_WORDS, MONTH_WORDS, MONTHS, ON, READ_AMPS, READ_DROP,
+    ACCURACY, ALTITUDE, AT_TIMES, AUTONOMY, BONDING, BONDS, COLDEST_MORNING, COVERED, CRITICAL,
+    DAYS_PER_WEEK, DELIVERED, DENSITY, DUTY, DUTY_HOT, HOURS, IN_PLANE, LATITUDE, LONGITUDE, LOSSES, MARGIN,
+    MAST, MEANS, MEASURED_AT, MONITORING, MONITORING_WORDS, MONTH_WORDS, MONTHS, ON, READ_AMPS, READ_DROP,
     READ_TEMPERATURE, READ_VOLTS, RESOLUTION, REST, SURGE_PROTECTION,
 };
 use crate::quantity::{Ratio, Textual, Time};
@@ -58,7 +58,10 @@ fn twelve<Q: Textual>(entry: &mut Entry<'_, '_>, key: &Key) -> Option<[Q; 12]> {
                 let months = if count == 1 { "month" } else { "months" };
                 entry.problem(
                     key,
-                    format!("the list has {count} {months}; twelve are needed, January first, such as {}", key.example),
+                    format!(
+                        "the list has {count} {months}; twelve are needed, January first, such as {}",
+                        key.example
+                    ),
                 );
             }
             None
@@ -139,7 +142,10 @@ pub(super) fn use_of(entry: &mut Entry<'_, '_>) -> LoadUseTime {
     let duty_hot: Option<Ratio> = entry.quantity(&DUTY_HOT);
     entry.ordered(&DUTY, duty, &DUTY_HOT, duty_hot);
     if duty.is_none() && duty_hot.is_some() && !entry.is_excused(&[&DUTY]) {
-        entry.problem(&DUTY_HOT, "there is no duty beside it; state the duty at mild ambient as 'duty'".to_owned());
+        entry.problem(
+            &DUTY_HOT,
+            "there is no duty beside it; state the duty at mild ambient as 'duty'".to_owned(),
+        );
     }
     LoadUseTime { hours, at, months, days_per_week, duty, duty_hot }
 }

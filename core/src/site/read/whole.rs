@@ -15,12 +15,14 @@ use super::entry::{Entry, Found, section, sections};
 use super::equipment;
 use super::keys::{
     ALUMINIUM, ALUMINIUM_WORDS, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, EARTHING,
-    EARTHING_WORDS, ENGINE_SPACE, FORMAT, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE, RULES_SECTION, SITE_AMBIENT,
-    Section, UNFUSED_LENGTH,
+    EARTHING_WORDS, ENGINE_SPACE, FORMAT, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE, RULES_SECTION,
+    SITE_AMBIENT, Section, UNFUSED_LENGTH,
 };
 use super::log::{Cut, Log, nearest};
 use super::plant;
-use super::plant_keys::{ARRAY, BANK, CONTROLLER, CONVERTER, GENERATOR, INVERTER, LOAD, READING, SITE, STOCK, TOP, WEATHER};
+use super::plant_keys::{
+    ARRAY, BANK, CONTROLLER, CONVERTER, GENERATOR, INVERTER, LOAD, READING, SITE, STOCK, TOP, WEATHER,
+};
 use super::references;
 use super::stock;
 use super::surroundings;
