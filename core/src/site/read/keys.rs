@@ -308,23 +308,6 @@ pub(super) const RULES_OVERRIDE: Section = Section::new(
     &[&CONTINUOUS_FACTOR, &OWN_DROP, &UNFUSED_LENGTH, &ENGINE_SPACE, &BUNDLING, &DEVICE_RATIO, &ALUMINIUM],
 );
 
-/// Words that people write for a key that has another name here.
-pub(super) const MEANT: [(&str, &str); 12] = [
-    // The length of what? Only the route, or each conductor, is unambiguous (R1).
-    ("length", "one_way"),
-    ("distance", "one_way"),
-    ("run", "one_way"),
-    ("area", "size"),
-    ("cross_section", "size"),
-    ("gauge", "size"),
-    ("voltage", "nominal"),
-    ("type", "kind"),
-    ("grouped", "bundled"),
-    ("temperature", "ambient"),
-    ("fuse", "device"),
-    ("breaker", "device"),
-];
-
 /// Words and what they stand for.
 pub(super) type Words<T> = &'static [(&'static str, T)];
 

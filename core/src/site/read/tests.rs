@@ -66,9 +66,9 @@ fn values_arrive_as_stated() {
     assert_eq!(site.name, "Heron Point");
     assert!((site.ambient.0.get::<degree_celsius>() + 25.0).abs() < 1e-9);
     let bank = &site.banks[0];
-    assert_eq!((bank.line, bank.strings), (10, 2));
-    assert!((bank.capacity.get::<ampere_hour>() - 400.0).abs() < 1e-9);
-    assert!((site.inverters[0].efficiency.get::<ratio>() - 0.9).abs() < 1e-12);
+    assert_eq!((bank.line, bank.units, bank.series, bank.strings), (30, Some(4), Some(2), Some(2)));
+    assert!((bank.capacity.unwrap().get::<ampere_hour>() - 400.0).abs() < 1e-9);
+    assert!((site.inverters[0].efficiency.unwrap().get::<ratio>() - 0.9).abs() < 1e-12);
     let (pump, radio) = (&site.loads[0], &site.loads[1]);
     assert_eq!((pump.kind, pump.count, pump.continuous), (LoadKind::Resistive, 4, false));
     assert_eq!((radio.kind, radio.count, radio.continuous), (LoadKind::Current, 1, true));

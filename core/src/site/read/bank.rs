@@ -1,0 +1,360 @@
+//! Banks and the batteries they are made of: what is stated of both must be one bank.
+
+use alloc::borrow::ToOwned;
+use alloc::format;
+
+use uom::si::electric_charge::ampere_hour;
+use uom::si::electric_potential::volt;
+
+use super::entry::Entry;
+use super::keys::{
+    CAPACITY, CHEMISTRY, CUT_OFF, GREATEST_DISCHARGE, HIGHEST, INTERNAL, Key, NOMINAL, PRICE, SHORT_CIRCUIT,
+    STRINGS, STUD,
+};
+use super::plant::{named, rising};
+use super::plant_keys::{
+    AIR_FLOW, BATTERY, BOARD_NAME, CELLS_AT, CHARGE_FROM, DAILY_DEPTH, DATA_LINK, DEPTH, DISCONNECT,
+    GREATEST_CHARGE, LINK, MAX_PARALLEL, MAX_SERIES, MIXED, OPENING, OPENS_UNDER_CHARGE, RATE, RECONNECT,
+    ROOM, ROUTE, SERIES, SHELF_COUNT, STRING_DEVICE, STRING_JOINT, TAKE_OFF, UNIT, UNIT_CAPACITY, UNITS,
+};
+use super::sections::{ROOM_WORDS, TAKE_OFF_WORDS};
+use crate::battery::Chemistry;
+use crate::quantity::Figures;
+use crate::site::parts::{BankPart, StockBattery};
+
+/// Nominal voltages of lithium and nickel may be labels: 12.8 V of LFP stand for 12 V. Those of lead are exact.
+const LABEL: f64 = 0.1;
+const EXACT: f64 = 0.005;
+/// Capacities that are the same.
+const SAME: f64 = 0.01;
+
+pub(super) fn bank(entry: &mut Entry<'_, '_>, stock: &[StockBattery]) -> Option<BankPart> {
+    let name = entry.name();
+    let part = BankPart {
+        line: entry.line(),
+        battery: named(entry, &BATTERY),
+        chemistry: entry.parsed(&CHEMISTRY),
+        nominal: entry.quantity(&NOMINAL),
+        capacity: entry.quantity(&CAPACITY),
+        unit: entry.quantity(&UNIT),
+        unit_capacity: entry.quantity(&UNIT_CAPACITY),
+        units: entry.count(&UNITS),
+        series: entry.count(&SERIES),
+        strings: entry.count(&STRINGS),
+        rate: entry.quantity(&RATE),
+        cut_off: entry.quantity(&CUT_OFF),
+        highest: entry.quantity(&HIGHEST),
+        short_circuit: entry.quantity(&SHORT_CIRCUIT),
+        internal_resistance: entry.quantity(&INTERNAL),
+        greatest_discharge: entry.quantity(&GREATEST_DISCHARGE),
+        greatest_charge: entry.quantity(&GREATEST_CHARGE),
+        charge_from: entry.quantity(&CHARGE_FROM),
+        stud: entry.parsed(&STUD),
+        temperature: rising(entry, &CELLS_AT),
+        depth: entry.quantity(&DEPTH),
+        daily_depth: entry.quantity(&DAILY_DEPTH),
+        disconnect: entry.quantity(&DISCONNECT),
+        reconnect: entry.quantity(&RECONNECT),
+        take_off: entry.word(&TAKE_OFF, TAKE_OFF_WORDS),
+        link: entry.quantity(&LINK),
+        joint: entry.quantity(&STRING_JOINT),
+        string_device: entry.quantity(&STRING_DEVICE),
+        max_series: entry.count(&MAX_SERIES),
+        max_parallel: entry.count(&MAX_PARALLEL),
+        mixed: entry.flag(&MIXED, false),
+        data_link: entry.flag(&DATA_LINK, false),
+        opens_under_charge: entry.flag(&OPENS_UNDER_CHARGE, false),
+        space: entry.word(&ROOM, ROOM_WORDS),
+        air: entry.quantity(&AIR_FLOW),
+        opening: entry.quantity(&OPENING),
+        route: entry.quantity(&ROUTE),
+        board: named(entry, &BOARD_NAME),
+        name: name.unwrap_or_default(),
+    };
+    in_order(entry, &part);
+    is_of_something(entry, &part);
+    batteries_agree(entry, &part, stock);
+    // Without a name it is refused, but only after all that can be said of it.
+    (!part.name.is_empty()).then_some(part)
+}
+
+/// Voltages and depths of which one must not be above the other.
+fn in_order(entry: &mut Entry<'_, '_>, part: &BankPart) {
+    entry.ordered(&CUT_OFF, part.cut_off, &NOMINAL, part.nominal);
+    entry.ordered(&NOMINAL, part.nominal, &HIGHEST, part.highest);
+    if part.nominal.is_none() {
+        entry.ordered(&CUT_OFF, part.cut_off, &HIGHEST, part.highest);
+    }
+    if let (Some(cut_off), Some(highest)) = (part.cut_off, part.highest)
+        && cut_off == highest
+    {
+        let sentence =
+            format!("{} is also the highest voltage; the cut-off must be below", entry.written(&CUT_OFF));
+        entry.problem(&CUT_OFF, sentence);
+    }
+    entry.ordered(&DISCONNECT, part.disconnect, &RECONNECT, part.reconnect);
+    entry.ordered(&RECONNECT, part.reconnect, &HIGHEST, part.highest);
+    if part.reconnect.is_none() {
+        entry.ordered(&DISCONNECT, part.disconnect, &HIGHEST, part.highest);
+    }
+    entry.ordered(&DAILY_DEPTH, part.daily_depth, &DEPTH, part.depth);
+}
+
+/// What is stated in figures of a bank is a figure of its chemistry and voltage.
+fn is_of_something(entry: &mut Entry<'_, '_>, part: &BankPart) {
+    const OF_CHEMISTRY: [&Key; 10] = [
+        &CAPACITY,
+        &UNIT,
+        &UNIT_CAPACITY,
+        &UNITS,
+        &CUT_OFF,
+        &HIGHEST,
+        &DISCONNECT,
+        &RECONNECT,
+        &SHORT_CIRCUIT,
+        &INTERNAL,
+    ];
+    if entry.has(&BATTERY) {
+        for key in [&CHEMISTRY, &UNIT, &UNIT_CAPACITY] {
+            if entry.has(key) {
+                entry.problem(
+                    key,
+                    "the battery of the stock tells it already; take one of the two out".to_owned(),
+                );
+            }
+        }
+    } else if let Some(beside) = OF_CHEMISTRY.into_iter().find(|key| entry.has(key))
+        && !entry.has(&CHEMISTRY)
+        && !entry.is_excused(&[&CHEMISTRY, &BATTERY])
+    {
+        let sentence = format!(
+            "key 'chemistry' is missing beside '{}'; state it, such as chemistry = {}, or name the battery of the stock",
+            beside.name, CHEMISTRY.example
+        );
+        entry.problem_here(sentence);
+    }
+    let has_series = entry.has(&SERIES) || entry.has(&UNITS) && entry.has(&STRINGS);
+    let by_batteries = has_series && (entry.has(&UNIT) || entry.has(&BATTERY));
+    let figure = [&CAPACITY, &UNITS, &CUT_OFF, &HIGHEST].into_iter().find(|key| entry.has(key));
+    if let Some(beside) = figure
+        && !entry.has(&NOMINAL)
+        && !by_batteries
+        && !entry.is_excused(&[&NOMINAL, &UNIT, &SERIES, &BATTERY])
+    {
+        let sentence = format!(
+            "key 'nominal' is missing beside '{}'; state it, such as nominal = {}, or the batteries and how many are in \
+             series",
+            beside.name, NOMINAL.example
+        );
+        entry.problem_here(sentence);
+    }
+    if part.strings == Some(1) || part.units.is_some() && part.units == part.series {
+        for key in [&TAKE_OFF, &LINK, &STRING_DEVICE] {
+            if entry.has(key) {
+                entry.problem(
+                    key,
+                    "it belongs to parallel strings, and there is one; take it out, or state the strings"
+                        .to_owned(),
+                );
+            }
+        }
+    }
+}
+
+fn digits(number: impl Into<f64>) -> alloc::string::String {
+    format!("{}", Figures(number.into()))
+}
+
+/// Voltage, number and capacity of a bank's batteries must agree with the bank's own.
+fn batteries_agree(entry: &mut Entry<'_, '_>, bank: &BankPart, stock: &[StockBattery]) {
+    let stock = bank.battery.as_ref().and_then(|name| stock.iter().find(|battery| battery.name == *name));
+    let chemistry = bank.chemistry.or(stock.map(|battery| battery.chemistry));
+    let unit_V = bank.unit.or(stock.map(|battery| battery.nominal)).map(|unit| unit.get::<volt>());
+    let nominal_V = bank.nominal.map(|nominal| nominal.get::<volt>());
+
+    // MERGE: `battery::cells` comes with the branch `battery`; take the next line out then. Where a battery is stated
+    // or of the stock, its own voltage is what the cells must make; that of the stock is reported with the stock.
+    #[cfg(any())]
+    if let Some(chemistry) = chemistry {
+        if let Some(unit) = bank.unit {
+            cells_fit(entry, &UNIT, chemistry, unit);
+        } else if let (Some(nominal), None) = (bank.nominal, stock) {
+            cells_fit(entry, &NOMINAL, chemistry, nominal);
+        }
+    }
+
+    let Some(series) = series_agree(entry, bank, chemistry, unit_V, nominal_V) else { return };
+    let units = bank.units;
+    let strings = bank.strings.or_else(|| units?.checked_div(series?));
+    let each = bank.unit_capacity.or(stock.map(|battery| battery.capacity));
+    let (Some(each), Some(whole)) = (each, bank.capacity) else { return };
+    let (each, whole) = (each.get::<ampere_hour>(), whole.get::<ampere_hour>());
+    if let Some(strings) = strings.map(f64::from) {
+        if libm::fabs(each * strings - whole) > SAME * whole {
+            let sentence = format!(
+                "{} parallel strings of {} Ah make {} Ah, not {}; mend the number that is wrong",
+                digits(strings),
+                digits(each),
+                digits(each * strings),
+                entry.written(&CAPACITY)
+            );
+            entry.problem(&CAPACITY, sentence);
+        }
+        return;
+    }
+    let strings = libm::round(whole / each);
+    if libm::fabs(each * strings - whole) > SAME * whole {
+        let fewer = libm::floor(whole / each);
+        let sentence = format!(
+            "{} is no whole number of strings of {} Ah; {} or {} Ah are",
+            entry.written(&CAPACITY),
+            digits(each),
+            digits(if fewer < 1.0 { each } else { fewer * each }),
+            digits(if fewer < 1.0 { 2.0 * each } else { (fewer + 1.0) * each })
+        );
+        entry.problem(&CAPACITY, sentence);
+    }
+}
+
+/// Batteries in one string, as far as they are known; `None` where what is stated contradicts itself.
+#[allow(non_snake_case)] // units keep their case
+fn series_agree(
+    entry: &mut Entry<'_, '_>,
+    bank: &BankPart,
+    chemistry: Option<Chemistry>,
+    unit_V: Option<f64>,
+    nominal_V: Option<f64>,
+) -> Option<Option<u32>> {
+    let exact = chemistry.is_some_and(Chemistry::is_lead_acid);
+    let part = if exact { EXACT } else { LABEL };
+    let fits = |series: f64, unit: f64, nominal: f64| {
+        series >= 1.0 && libm::fabs(series * unit - nominal) <= part * nominal
+    };
+    // How many the units are in each string, where units and strings are stated; else it is stated or left open.
+    let by_units = match (bank.units, bank.strings) {
+        (Some(units), Some(strings)) if strings > 0 && units % strings == 0 => units.checked_div(strings),
+        _ => None,
+    };
+    let stated = bank.series.or(by_units);
+    let mut series = stated;
+    if let (Some(unit), Some(nominal)) = (unit_V, nominal_V) {
+        let count = libm::round(nominal / unit);
+        let some_fit = fits(count, unit, nominal);
+        if !some_fit {
+            let fewer = libm::floor(nominal / unit).max(1.0);
+            let sentence = format!(
+                "{} is no whole number of batteries of {} V; {} in series make {} V, {} make {} V",
+                entry.written(&NOMINAL),
+                digits(unit),
+                digits(fewer),
+                digits(fewer * unit),
+                digits(fewer + 1.0),
+                digits((fewer + 1.0) * unit)
+            );
+            entry.problem(&NOMINAL, sentence);
+            return None;
+        }
+        if let Some(stated) = stated {
+            if !fits(f64::from(stated), unit, nominal) {
+                let key = if bank.series.is_some() { &SERIES } else { &UNITS };
+                let sentence = format!(
+                    "{} in series of {} V make {} V, not {}; {} do",
+                    digits(stated),
+                    digits(unit),
+                    digits(f64::from(stated) * unit),
+                    entry.written(&NOMINAL),
+                    digits(count)
+                );
+                entry.problem(key, sentence);
+                return None;
+            }
+        } else {
+            // Where the nominal voltage is a label, more than one number may be meant: that which the units allow.
+            let least = libm::ceil((1.0 - part) * nominal / unit).max(1.0);
+            let most = libm::floor((1.0 + part) * nominal / unit).max(least);
+            let divides =
+                |series: f64| bank.units.is_none_or(|units| libm::fmod(f64::from(units), series).abs() < 0.5);
+            let near = (0_u32..=100)
+                .flat_map(|step| [count + f64::from(step), count - f64::from(step)])
+                .find(|&series| series >= least && series <= most && divides(series));
+            series = whole(near.unwrap_or(count));
+        }
+    }
+    let (Some(in_series), Some(units)) = (series, bank.units) else { return Some(series) };
+    let whole_strings = units.checked_rem(in_series) == Some(0);
+    match bank.strings {
+        Some(strings) if strings.checked_mul(in_series) != Some(units) => {
+            let sentence = format!(
+                "{units} batteries are not {strings} parallel strings of {in_series}, which are {}; mend the number \
+                 that is wrong",
+                strings.saturating_mul(in_series)
+            );
+            entry.problem(&UNITS, sentence);
+            None
+        }
+        None if !whole_strings => {
+            let fewer = (units / in_series.max(1)).max(1).saturating_mul(in_series);
+            let what = match (nominal_V, unit_V) {
+                (Some(nominal), Some(unit)) => {
+                    format!(" ({} V of {} V each)", digits(nominal), digits(unit))
+                }
+                _ => alloc::string::String::new(),
+            };
+            let sentence = format!(
+                "{units} batteries do not make whole strings of {in_series}{what}; {fewer} or {} do",
+                fewer.saturating_add(in_series)
+            );
+            entry.problem(&UNITS, sentence);
+            None
+        }
+        _ => Some(series),
+    }
+}
+
+/// A small whole number.
+fn whole(number: f64) -> Option<u32> {
+    (number >= 1.0 && number <= 1e6).then(|| number as u32)
+}
+
+// MERGE: see above.
+#[cfg(any())]
+fn cells_fit(
+    entry: &mut Entry<'_, '_>,
+    key: &Key,
+    chemistry: Chemistry,
+    volts: crate::quantity::ElectricPotential,
+) {
+    if let Err(error) = crate::battery::cells(chemistry, volts) {
+        entry.problem(key, alloc::string::ToString::to_string(&error));
+    }
+}
+
+/// `[[stock.battery]]`.
+pub(super) fn battery(entry: &mut Entry<'_, '_>) -> Option<StockBattery> {
+    let name = entry.name();
+    let (chemistry, nominal, capacity) =
+        (entry.parsed(&CHEMISTRY), entry.quantity(&NOMINAL), entry.quantity(&CAPACITY));
+    // MERGE: see above.
+    #[cfg(any())]
+    if let (Some(chemistry), Some(nominal)) = (chemistry, nominal) {
+        cells_fit(entry, &NOMINAL, chemistry, nominal);
+    }
+    Some(StockBattery {
+        line: entry.line(),
+        rate: entry.quantity(&RATE),
+        internal_resistance: entry.quantity(&INTERNAL),
+        short_circuit: entry.quantity(&SHORT_CIRCUIT),
+        greatest_charge: entry.quantity(&GREATEST_CHARGE),
+        greatest_discharge: entry.quantity(&GREATEST_DISCHARGE),
+        charge_from: entry.quantity(&CHARGE_FROM),
+        max_series: entry.count(&MAX_SERIES),
+        max_parallel: entry.count(&MAX_PARALLEL),
+        stud: entry.parsed(&STUD),
+        price: entry.number(&PRICE),
+        count: entry.count(&SHELF_COUNT),
+        name: name?,
+        chemistry: chemistry?,
+        nominal: nominal?,
+        capacity: capacity?,
+    })
+}
