@@ -87,6 +87,7 @@ fn in_order(entry: &mut Entry<'_, '_>, part: &BankPart) {
     }
     if let (Some(cut_off), Some(highest)) = (part.cut_off, part.highest)
         && cut_off == highest
+        && part.nominal.is_none_or(|nominal| nominal == highest)
     {
         let sentence =
             format!("{} is also the highest voltage; the cut-off must be below", entry.written(&CUT_OFF));

@@ -2,7 +2,7 @@
 //! [`super::reach`].
 
 use alloc::borrow::ToOwned;
-use alloc::collections::BTreeMap;
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::String;
 use alloc::vec;
@@ -42,26 +42,28 @@ impl<'d> Plan<'d> {
 
     /// Reports every problem of names, ends and ways.
     pub(super) fn check(&self, log: &mut Log) {
-        let names = self.names(log);
+        let (names, doubled) = self.names(log);
         self.check_circuit_names(log);
         self.check_presence(log);
         let mut ways: Vec<Vec<Way>> = vec![Vec::new(); self.nodes.len()];
         let mut all_known = true;
         let mut ends = Vec::with_capacity(self.wires.len());
         for wire in &self.wires {
-            let known = self.ends(wire, &names, log);
+            let known = self.ends(wire, &names, &doubled, log);
             all_known &= known.is_some();
             ends.push(known);
         }
-        self.check_ways(&ends, &mut ways, log);
+        let refused = self.check_ways(&ends, &mut ways, log);
         // An end that is not known may be the feed that seems to be missing.
         if all_known {
-            Reach::new(&self.nodes, &self.wires, &ends, &names, &self.inputs).check(log);
+            Reach::new(&self.nodes, &self.wires, &ends, &refused, &names, &self.inputs).check(log);
         }
     }
 
-    fn names(&self, log: &mut Log) -> BTreeMap<&'d str, usize> {
+    /// What each name stands for, and the names that stand for two things.
+    fn names(&self, log: &mut Log) -> (BTreeMap<&'d str, usize>, BTreeSet<&'d str>) {
         let mut names: BTreeMap<&str, usize> = BTreeMap::new();
+        let mut doubled = BTreeSet::new();
         for (index, node) in self.nodes.iter().enumerate().filter(|(_, node)| !node.kind.is_input()) {
             let first = *names.entry(node.name).or_insert(index);
             let Some(other) = self.nodes.get(first).filter(|_| first != index) else { continue };
@@ -71,8 +73,9 @@ impl<'d> Plan<'d> {
                 log.line(other.at)
             );
             log.push(node.at, node.place(), sentence);
+            doubled.insert(node.name);
         }
-        names
+        (names, doubled)
     }
 
     fn check_circuit_names(&self, log: &mut Log) {
@@ -114,11 +117,16 @@ impl<'d> Plan<'d> {
         &self,
         wire: &Wire<'d>,
         names: &BTreeMap<&'d str, usize>,
+        doubled: &BTreeSet<&'d str>,
         log: &mut Log,
     ) -> Option<(usize, usize)> {
         let from = Self::end(wire, "from", wire.from, names, log);
         let to = Self::end(wire, "to", wire.to, names, log);
         let (from, named) = (from?, to?);
+        // What such a name means is not known, and that it is doubled is reported.
+        if [wire.from, wire.to].iter().flatten().any(|(name, _)| doubled.contains(name)) {
+            return None;
+        }
         let (source, target) = (self.nodes.get(from)?, self.nodes.get(named)?);
         let to = self.inputs.get(target.name).copied().unwrap_or(named);
         let (from_at, to_at) =
@@ -198,8 +206,14 @@ impl<'d> Plan<'d> {
         None
     }
 
-    /// Two ways to one node.
-    fn check_ways(&self, ends: &[Option<(usize, usize)>], ways: &mut [Vec<Way>], log: &mut Log) {
+    /// Two ways to one node; the circuits that were refused for it.
+    fn check_ways(
+        &self,
+        ends: &[Option<(usize, usize)>],
+        ways: &mut [Vec<Way>],
+        log: &mut Log,
+    ) -> BTreeSet<usize> {
+        let mut refused = BTreeSet::new();
         let mut groups = Groups::new(self.nodes.len());
         let mut feeds: Vec<Option<usize>> = vec![None; self.nodes.len()];
         let mut loops = 0_usize;
@@ -216,6 +230,7 @@ impl<'d> Plan<'d> {
                     array.words()
                 );
                 log.push(wire.at, wire.place(), sentence);
+                refused.insert(number);
                 continue;
             }
             if let Some(first) = first.filter(|_| node.kind.draws()) {
@@ -229,6 +244,7 @@ impl<'d> Plan<'d> {
                 let sentence =
                     format!("{} is fed by circuit {} already; {what}", node.words(), first.label(log));
                 log.push(wire.at, wire.place(), sentence);
+                refused.insert(number);
                 continue;
             }
             if !groups.join(from, to) {
@@ -236,6 +252,7 @@ impl<'d> Plan<'d> {
                 let path = if loops <= MOST_LOOPS { path(ways, from, to) } else { Vec::new() };
                 let sentence = self.loop_sentence(node, &path, log);
                 log.push(wire.at, wire.place(), sentence);
+                refused.insert(number);
                 continue;
             }
             if let Some(feed) = feeds.get_mut(to) {
@@ -247,6 +264,7 @@ impl<'d> Plan<'d> {
                 }
             }
         }
+        refused
     }
 
     fn loop_sentence(&self, node: &Node<'_>, path: &[usize], log: &Log) -> String {

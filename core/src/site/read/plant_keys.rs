@@ -45,8 +45,12 @@ pub(super) const SURGE_PROTECTION: Key = flag("surge_protection");
 pub(super) const MAST: Key = flag("mast");
 
 // [weather]
-pub(super) const IN_PLANE: Key =
-    key("in_plane", "a list of twelve irradiations (January first)", "[\"0.6 kWh/m2\", \"1.4 kWh/m2\", …]", SUN);
+pub(super) const IN_PLANE: Key = key(
+    "in_plane",
+    "a list of twelve irradiations (January first)",
+    "[\"0.6 kWh/m2\", \"1.4 kWh/m2\", …]",
+    SUN,
+);
 pub(super) const MEANS: Key =
     key("temperature", "a list of twelve temperatures (January first)", "[\"2 degC\", \"2 degC\", …]", AIR);
 pub(super) const COLDEST_MORNING: Key = key("coldest_morning", "a temperature", "\"-25 degC\"", AIR);

@@ -4,7 +4,7 @@
 //! their outputs to that behind. An array keeps a network of its own, which only controllers may tap.
 
 use alloc::borrow::ToOwned;
-use alloc::collections::BTreeMap;
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::String;
 use alloc::vec;
@@ -47,6 +47,9 @@ pub(super) struct Reach<'p, 'd> {
     feed: Vec<Option<usize>>,
     /// The array whose designed circuit leads to an input.
     tapped: Vec<Option<usize>>,
+    /// Nodes whose circuit was refused, and whether an array leads nowhere: what is not fed may have its feed there.
+    doubtful: Vec<bool>,
+    is_loose: bool,
     groups: Groups,
     held: Vec<Held>,
 }
@@ -56,6 +59,7 @@ impl<'p, 'd> Reach<'p, 'd> {
         nodes: &[Node<'d>],
         wires: &'p [Wire<'d>],
         ends: &[Option<(usize, usize)>],
+        refused: &BTreeSet<usize>,
         names: &'p BTreeMap<&'d str, usize>,
         inputs: &'p BTreeMap<&'d str, usize>,
     ) -> Self {
@@ -84,15 +88,24 @@ impl<'p, 'd> Reach<'p, 'd> {
             out: vec![None; count],
             feed: vec![None; count],
             tapped: vec![None; count],
+            doubtful: vec![false; count],
+            is_loose: false,
             groups: Groups::new(count),
             held: vec![Held::default(); count],
         };
-        for (number, &(from, to)) in
-            ends.iter().enumerate().filter_map(|(number, end)| Some((number, end.as_ref()?)))
-        {
+        for (number, end) in ends.iter().enumerate() {
+            let Some((from, to)) = *end else { continue };
             if let (Some(out), Some(into)) = (reach.out.get_mut(from), reach.into.get_mut(to)) {
                 out.get_or_insert(number);
                 into.get_or_insert(number);
+            }
+            if refused.contains(&number) {
+                for end in [from, to] {
+                    if let Some(doubtful) = reach.doubtful.get_mut(end) {
+                        *doubtful = true;
+                    }
+                }
+                continue;
             }
             reach.join(from, to);
         }
@@ -130,16 +143,19 @@ impl<'p, 'd> Reach<'p, 'd> {
                 Kind::Controller | Kind::Generator if out.is_none() && node.route.is_some() => {
                     self.join(index, board);
                 }
-                Kind::Array if out.is_none() && node.route.is_some() => {
-                    if let Some(input) = self.controller_of(&node)
-                        && Self::way(&self.into, input).is_none()
-                        && Self::way(&self.tapped, input).is_none()
-                    {
-                        if let Some(slot) = self.tapped.get_mut(input) {
-                            *slot = Some(index);
-                        }
-                        self.join(index, input);
+                Kind::Array if out.is_none() => {
+                    let input = self.controller_of(&node).filter(|_| node.route.is_some());
+                    let Some(input) = input else {
+                        self.is_loose = true;
+                        continue;
+                    };
+                    if Self::way(&self.into, input).is_some() || Self::way(&self.tapped, input).is_some() {
+                        continue;
                     }
+                    if let Some(slot) = self.tapped.get_mut(input) {
+                        *slot = Some(index);
+                    }
+                    self.join(index, input);
                 }
                 _ => {}
             }
@@ -178,9 +194,10 @@ impl<'p, 'd> Reach<'p, 'd> {
     pub(super) fn check(mut self, log: &mut Log) {
         for index in 0..self.stated {
             let Some(&node) = self.nodes.get(index) else { continue };
-            let top = self.groups.top(index);
-            let held = self.held.get(top).copied().unwrap_or_default();
+            let held = self.held_with(index);
+            let is_doubtful = self.doubtful.get(index).copied().unwrap_or(false);
             let sentence = match node.kind {
+                _ if is_doubtful => None,
                 Kind::Bank | Kind::Board => None,
                 Kind::Load if node.is_ac => None,
                 Kind::Load | Kind::Inverter => self.of_load(index, &node, held),
@@ -202,6 +219,12 @@ impl<'p, 'd> Reach<'p, 'd> {
                 self.check_stated_twice(index, &node, log);
             }
         }
+    }
+
+    /// What hangs on the network of a node.
+    fn held_with(&mut self, index: usize) -> Held {
+        let top = self.groups.top(index);
+        self.held.get(top).copied().unwrap_or_default()
     }
 
     fn words(&self, index: Option<usize>) -> String {
@@ -263,7 +286,7 @@ impl<'p, 'd> Reach<'p, 'd> {
         }
         if held.array.is_none() {
             let is_joined = Self::way(&self.into, index).is_some();
-            return (is_joined || self.has_array).then(|| {
+            return (is_joined || self.has_array && !self.is_loose).then(|| {
                 "no array leads to it; write the circuit, or name it as the controller of an array that states its route"
                     .to_owned()
             });
@@ -277,12 +300,19 @@ impl<'p, 'd> Reach<'p, 'd> {
         })
     }
 
-    fn of_array(&self, index: usize, node: &Node<'d>, held: Held) -> Option<String> {
+    fn of_array(&mut self, index: usize, node: &Node<'d>, held: Held) -> Option<String> {
         if let Some(live) = held.live() {
-            return Some(format!(
-                "it is joined to {} without a controller between; lead its circuit to a controller",
-                self.words(Some(live))
-            ));
+            let live = Some(live).filter(|_| held.bank.is_some() || held.converter.is_some());
+            return Some(match live {
+                Some(_) => format!(
+                    "it is joined to {} without a controller between; lead its circuit to a controller",
+                    self.words(live)
+                ),
+                None => format!(
+                    "the output of {} hangs on it; lead that to the bank's board, by its key 'board' or a circuit",
+                    self.words(held.charger)
+                ),
+            });
         }
         if Self::way(&self.out, index).is_some() {
             return match node.controller.and_then(|_| self.controller_of(node)) {
@@ -304,7 +334,7 @@ impl<'p, 'd> Reach<'p, 'd> {
         }
         if node.controller.is_none() && self.controllers.len() > 1 {
             return Some(format!(
-                "to which of the {} controllers it leads is not stated; write controller, its name",
+                "which of the {} controllers it leads to is not stated; state it as 'controller'",
                 self.controllers.len()
             ));
         }
@@ -313,7 +343,11 @@ impl<'p, 'd> Reach<'p, 'd> {
         let other = match Self::way(&self.tapped, input) {
             Some(other) if other == index => return None,
             Some(other) => self.words(Some(other)),
-            None => self.words(Self::way(&self.feed, input)),
+            None => {
+                // Fed from elsewhere than an array: that is reported with the input.
+                let array = self.held_with(input).array?;
+                self.words(Some(array))
+            }
         };
         Some(format!(
             "{} is fed by {other} already; write circuits from both to a board before it, or state a controller for each",
@@ -325,8 +359,7 @@ impl<'p, 'd> Reach<'p, 'd> {
     fn of_charger(&mut self, index: usize, node: &Node<'d>, held: Held) -> Option<String> {
         // Its circuit is written the wrong way round: that is reported with its input.
         if let Some(&input) = self.inputs.get(node.name) {
-            let top = self.groups.top(input);
-            if self.held.get(top).is_some_and(|held| held.live().is_some()) {
+            if self.held_with(input).live().is_some() {
                 return None;
             }
         }
@@ -374,7 +407,12 @@ impl<'p, 'd> Reach<'p, 'd> {
             log.push(at, format!("{}, route", node.place()), sentence);
         }
         let is_end = |end: Option<Placed<'d>>, name: &str| end.is_some_and(|(end, _)| end == name);
+        let is_board = |name: &str| {
+            let named = self.names.get(name).and_then(|&index| self.nodes.get(index));
+            named.is_some_and(|node| node.kind == Kind::Board)
+        };
         if let Some((name, at)) = node.board
+            && is_board(name)
             && !is_end(wire.from, name)
             && !is_end(wire.to, name)
         {

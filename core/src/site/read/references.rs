@@ -157,7 +157,7 @@ fn ac(sections: &Sections<'_>, log: &mut Log) {
             }
             None if several && !has(load, &INVERTER_NAME) => {
                 let sentence = format!(
-                    "which of the {} inverters feeds it is not stated; write inverter, its name",
+                    "which of the {} inverters feeds it is not stated; state it as 'inverter'",
                     sections.inverters.len()
                 );
                 log.push(load.at, place(&LOAD, load), sentence);

@@ -7,7 +7,7 @@ use alloc::vec::Vec;
 
 use uom::si::time::minute;
 
-use super::entry::Entry;
+use super::entry::{Entry, shown};
 use super::keys::{CONTINUOUS, Key, SITE_AMBIENT};
 use super::log::{Cut, nearest};
 use super::plant::{named, said};
@@ -88,12 +88,15 @@ pub(super) fn weather(entry: &mut Entry<'_, '_>, ambient: Option<Ambient>) -> Op
     if let Some((least, greatest)) = ambient {
         let strange = |value: ThermodynamicTemperature| value < least || value > greatest;
         if let Some(month) = temperature.and_then(|list| list.into_iter().position(strange)) {
+            let item = entry.value(&MEANS).and_then(|value| value.get_ref().as_array()?.get(month));
+            let (at, written) = item.map_or((0, ""), |item| (item.span().start, shown(entry.text, item)));
             let sentence = format!(
-                "the mean of {} is not within {} of [site]; mend the one that is wrong",
+                "'{}' of {} is not within {} of [site]; mend the one that is wrong",
+                Cut(written),
                 MONTH_WORDS.get(month).copied().unwrap_or(""),
                 SITE_AMBIENT.name
             );
-            entry.problem(&MEANS, sentence);
+            entry.problem_at(at, &MEANS, sentence);
         }
         if coldest_morning.is_some_and(strange) {
             let sentence = format!(
@@ -180,7 +183,9 @@ fn months(entry: &mut Entry<'_, '_>) -> Option<u16> {
     let mut months = None;
     for (text, place) in texts(entry, &MONTHS) {
         let Some(month) = MONTH_WORDS.iter().position(|word| *word == text) else {
-            let sentence = match nearest(text, MONTH_WORDS.iter().copied()) {
+            let lower = text.to_lowercase();
+            let begins = MONTH_WORDS.into_iter().find(|word| lower.starts_with(&word.to_lowercase()));
+            let sentence = match begins.or_else(|| nearest(text, MONTH_WORDS.iter().copied())) {
                 Some(word) => format!("'{}' is no month here; did you mean '{word}'?", Cut(text)),
                 None => {
                     format!("'{}' is no month here; it must be one of {}", Cut(text), MONTH_WORDS.join(", "))

@@ -17,6 +17,10 @@ fn is_orderly(text: &str) -> Result<(), TestCaseError> {
     }
     for problem in &problems.0 {
         prop_assert!(problem.line <= lines, "{problem}");
+        // Without a line are only those of the whole file: what is not there has no line.
+        let is_whole = ["there is no ", "the file ", "key 'format' is missing"];
+        let has_place = problem.line > 0 || is_whole.iter().any(|begin| problem.text.starts_with(begin));
+        prop_assert!(has_place, "{problem}");
         let printed = problem.to_string();
         prop_assert!(printed.len() < 1000 && !printed.chars().any(char::is_control), "{printed:?}");
     }
@@ -24,7 +28,7 @@ fn is_orderly(text: &str) -> Result<(), TestCaseError> {
 }
 
 /// Pieces that a text of this kind is made of.
-const PIECES: [&str; 38] = [
+const PIECES: [&str; 64] = [
     "[",
     "]",
     "[[",
@@ -63,6 +67,32 @@ const PIECES: [&str; 38] = [
     "[[circuit.device]]\n",
     "name = \"a\"\n",
     "format = 1\n",
+    "[weather]\n",
+    "[[bank]]\n",
+    "[[array]]\n",
+    "[[controller]]\n",
+    "[[generator]]\n",
+    "[[converter]]\n",
+    "[[board]]\n",
+    "[[inverter]]\n",
+    "[[load]]\n",
+    "[[reading]]\n",
+    "[[stock.battery]]\n",
+    "[[stock.module]]\n",
+    "[[stock.controller]]\n",
+    "[[stock.inverter]]\n",
+    "name = \"b\"\n",
+    "from = \"a\"\n",
+    "to = \"b\"\n",
+    "route = \"1 m\"\n",
+    "battery = \"a\"\n",
+    "controller = \"b\"\n",
+    "units = 5\n",
+    "series = 2\n",
+    "nominal = \"24 V\"\n",
+    "unit = \"1e-300 V\"\n",
+    "at = [\"18:00-23:00\"]\n",
+    "ac = true\n",
 ];
 
 proptest! {
@@ -104,6 +134,51 @@ proptest! {
             }
         }
         is_orderly(&text.into_iter().collect::<String>())?;
+    }
+
+    /// Sections of the whole document, some taken out, some doubled, in any order.
+    #[test]
+    fn shuffled_sections_never_panic(order in prop::collection::vec(0..VALID.matches("\n[").count(), 0..60)) {
+        let sections: Vec<&str> = VALID.split("\n\n").collect();
+        let shuffled: Vec<&str> = order.into_iter().filter_map(|at| sections.get(at)).flat_map(|s| [s, "\n"]).collect();
+        is_orderly(&shuffled.concat())?;
+    }
+
+    /// Every value of the whole document against every other: numbers, units, words and names in the wrong place.
+    #[test]
+    fn swapped_values_never_panic(swaps in prop::collection::vec((0..VALID.lines().count(), 0..VALID.lines().count()), 1..30)) {
+        let mut lines: Vec<String> = VALID.lines().map(ToString::to_string).collect();
+        for (one, other) in swaps {
+            let value = VALID.lines().nth(other).and_then(|line| line.split_once(" = ")).map(|(_, value)| value);
+            let key = VALID.lines().nth(one).and_then(|line| line.split_once(" = ")).map(|(key, _)| key);
+            if let (Some(key), Some(value)) = (key, value) {
+                lines[one] = [key, " = ", value].concat();
+            }
+        }
+        is_orderly(&lines.join("\n"))?;
+    }
+
+    /// Any figures of a bank and of an array, however far apart.
+    #[test]
+    fn any_figures_never_panic(
+        numbers in prop::collection::vec(prop::option::of(0_u32..100_001), 6),
+        volts in prop::collection::vec(prop::option::of(-2.0..3.0_f64), 4),
+    ) {
+        let mut text = String::from("format = 1\n[[bank]]\nname = \"a\"\nchemistry = \"lfp\"\n");
+        for (key, volts) in ["nominal", "unit"].iter().zip(&volts) {
+            if let Some(volts) = volts { text += &alloc::format!("{key} = \"{} V\"\n", libm::pow(10.0, *volts)); }
+        }
+        for (key, charge) in ["capacity", "unit_capacity"].iter().zip(&volts[2..]) {
+            if let Some(charge) = charge { text += &alloc::format!("{key} = \"{} Ah\"\n", libm::pow(10.0, *charge)); }
+        }
+        for (key, number) in ["units", "series", "strings"].iter().zip(&numbers) {
+            if let Some(number) = number { text += &alloc::format!("{key} = {number}\n"); }
+        }
+        text += "[[array]]\nname = \"b\"\n";
+        for (key, number) in ["modules", "series", "strings"].iter().zip(&numbers[3..]) {
+            if let Some(number) = number { text += &alloc::format!("{key} = {number}\n"); }
+        }
+        is_orderly(&text)?;
     }
 
     #[test]

@@ -85,6 +85,8 @@ fn every_key_stands_in_its_section_with_its_range() {
             let row = row(section.header, key);
             let range = range(&key.range);
             assert!(row.contains(&range), "{}, {}: {range}", section.header, key.name);
+            let is_open = range.starts_with("> ") || !row.contains(&format!("> {range}"));
+            assert!(range.is_empty() || is_open, "{}, {}: {range}", section.header, key.name);
             let is_needed = section.needed.iter().any(|needed| needed.name == key.name);
             assert_eq!(row.contains("| – |"), is_needed, "{}, {}", section.header, key.name);
         }
