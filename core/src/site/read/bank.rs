@@ -2,6 +2,7 @@
 
 use alloc::borrow::ToOwned;
 use alloc::format;
+use alloc::string::String;
 
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_potential::volt;
@@ -27,6 +28,8 @@ const LABEL: f64 = 0.1;
 const EXACT: f64 = 0.005;
 /// Capacities that are the same.
 const SAME: f64 = 0.01;
+/// Batteries in one string that are looked for: 1500 V of 1.2 V and more.
+const MOST_SERIES: u32 = 2000;
 
 pub(super) fn bank(entry: &mut Entry<'_, '_>, stock: &[StockBattery]) -> Option<BankPart> {
     let name = entry.name();
@@ -162,9 +165,12 @@ fn is_of_something(entry: &mut Entry<'_, '_>, part: &BankPart) {
     }
 }
 
-fn digits(number: impl Into<f64>) -> alloc::string::String {
+fn digits(number: impl Into<f64>) -> String {
     format!("{}", Figures(number.into()))
 }
+
+/// What is stated contradicts itself, and was reported: what follows from it would be noise.
+struct Contradiction;
 
 /// Voltage, number and capacity of a bank's batteries must agree with the bank's own.
 fn batteries_agree(entry: &mut Entry<'_, '_>, bank: &BankPart, stock: &[StockBattery]) {
@@ -184,9 +190,11 @@ fn batteries_agree(entry: &mut Entry<'_, '_>, bank: &BankPart, stock: &[StockBat
         }
     }
 
-    let Some(series) = series_agree(entry, bank, chemistry, unit_V, nominal_V) else { return };
-    let units = bank.units;
-    let strings = bank.strings.or_else(|| units?.checked_div(series?));
+    let Ok(series) = series_agree(entry, bank, chemistry, unit_V, nominal_V) else { return };
+    if units_agree(entry, bank, series, unit_V.zip(nominal_V)).is_err() {
+        return;
+    }
+    let strings = bank.strings.or_else(|| bank.units?.checked_div(series?));
     let each = bank.unit_capacity.or(stock.map(|battery| battery.capacity));
     let (Some(each), Some(whole)) = (each, bank.capacity) else { return };
     let (each, whole) = (each.get::<ampere_hour>(), whole.get::<ampere_hour>());
@@ -217,7 +225,7 @@ fn batteries_agree(entry: &mut Entry<'_, '_>, bank: &BankPart, stock: &[StockBat
     }
 }
 
-/// Batteries in one string, as far as they are known; `None` where what is stated contradicts itself.
+/// Batteries in one string, as far as they are known.
 #[allow(non_snake_case)] // units keep their case
 fn series_agree(
     entry: &mut Entry<'_, '_>,
@@ -225,96 +233,81 @@ fn series_agree(
     chemistry: Option<Chemistry>,
     unit_V: Option<f64>,
     nominal_V: Option<f64>,
-) -> Option<Option<u32>> {
-    let exact = chemistry.is_some_and(Chemistry::is_lead_acid);
-    let part = if exact { EXACT } else { LABEL };
-    let fits = |series: f64, unit: f64, nominal: f64| {
-        series >= 1.0 && libm::fabs(series * unit - nominal) <= part * nominal
-    };
-    // How many the units are in each string, where units and strings are stated; else it is stated or left open.
+) -> Result<Option<u32>, Contradiction> {
     let by_units = match (bank.units, bank.strings) {
-        (Some(units), Some(strings)) if strings > 0 && units % strings == 0 => units.checked_div(strings),
+        (Some(units), Some(strings)) if units.checked_rem(strings) == Some(0) => units.checked_div(strings),
         _ => None,
     };
     let stated = bank.series.or(by_units);
-    let mut series = stated;
-    if let (Some(unit), Some(nominal)) = (unit_V, nominal_V) {
-        let count = libm::round(nominal / unit);
-        let some_fit = fits(count, unit, nominal);
-        if !some_fit {
-            let fewer = libm::floor(nominal / unit).max(1.0);
-            let sentence = format!(
-                "{} is no whole number of batteries of {} V; {} in series make {} V, {} make {} V",
-                entry.written(&NOMINAL),
-                digits(unit),
-                digits(fewer),
-                digits(fewer * unit),
-                digits(fewer + 1.0),
-                digits((fewer + 1.0) * unit)
-            );
-            entry.problem(&NOMINAL, sentence);
-            return None;
-        }
-        if let Some(stated) = stated {
-            if !fits(f64::from(stated), unit, nominal) {
-                let key = if bank.series.is_some() { &SERIES } else { &UNITS };
-                let sentence = format!(
-                    "{} in series of {} V make {} V, not {}; {} do",
-                    digits(stated),
-                    digits(unit),
-                    digits(f64::from(stated) * unit),
-                    entry.written(&NOMINAL),
-                    digits(count)
-                );
-                entry.problem(key, sentence);
-                return None;
-            }
-        } else {
-            // Where the nominal voltage is a label, more than one number may be meant: that which the units allow.
-            let least = libm::ceil((1.0 - part) * nominal / unit).max(1.0);
-            let most = libm::floor((1.0 + part) * nominal / unit).max(least);
-            let divides =
-                |series: f64| bank.units.is_none_or(|units| libm::fmod(f64::from(units), series).abs() < 0.5);
-            let near = (0_u32..=100)
-                .flat_map(|step| [count + f64::from(step), count - f64::from(step)])
-                .find(|&series| series >= least && series <= most && divides(series));
-            series = whole(near.unwrap_or(count));
-        }
+    let Some((unit, nominal)) = unit_V.zip(nominal_V) else { return Ok(stated) };
+
+    let part = if chemistry.is_some_and(Chemistry::is_lead_acid) { EXACT } else { LABEL };
+    let beside = |series: u32| libm::fabs(f64::from(series) * unit - nominal);
+    let fits = |series: &u32| beside(*series) <= part * nominal;
+    // Where the nominal voltage is a label, more than one number may be meant: that which the units allow.
+    let nearest = |divides: &dyn Fn(u32) -> bool| {
+        let fitting = (1..=MOST_SERIES).filter(fits).filter(|series| divides(*series));
+        fitting.min_by(|one, other| beside(*one).total_cmp(&beside(*other)))
+    };
+    let Some(usual) = nearest(&|_| true) else {
+        let fewer = libm::floor(nominal / unit).max(1.0);
+        let sentence = format!(
+            "{} is no whole number of batteries of {} V; {} in series make {} V, {} make {} V",
+            entry.written(&NOMINAL),
+            digits(unit),
+            digits(fewer),
+            digits(fewer * unit),
+            digits(fewer + 1.0),
+            digits((fewer + 1.0) * unit)
+        );
+        entry.problem(&NOMINAL, sentence);
+        return Err(Contradiction);
+    };
+    let Some(stated) = stated else {
+        let divides = |series: u32| bank.units.is_none_or(|units| units.checked_rem(series) == Some(0));
+        return Ok(nearest(&divides).or(Some(usual)));
+    };
+    if fits(&stated) {
+        return Ok(Some(stated));
     }
-    let (Some(in_series), Some(units)) = (series, bank.units) else { return Some(series) };
-    let whole_strings = units.checked_rem(in_series) == Some(0);
-    match bank.strings {
-        Some(strings) if strings.checked_mul(in_series) != Some(units) => {
-            let sentence = format!(
-                "{units} batteries are not {strings} parallel strings of {in_series}, which are {}; mend the number \
-                 that is wrong",
-                strings.saturating_mul(in_series)
-            );
-            entry.problem(&UNITS, sentence);
-            None
-        }
-        None if !whole_strings => {
-            let fewer = (units / in_series.max(1)).max(1).saturating_mul(in_series);
-            let what = match (nominal_V, unit_V) {
-                (Some(nominal), Some(unit)) => {
-                    format!(" ({} V of {} V each)", digits(nominal), digits(unit))
-                }
-                _ => alloc::string::String::new(),
-            };
-            let sentence = format!(
-                "{units} batteries do not make whole strings of {in_series}{what}; {fewer} or {} do",
-                fewer.saturating_add(in_series)
-            );
-            entry.problem(&UNITS, sentence);
-            None
-        }
-        _ => Some(series),
-    }
+    let sentence = format!(
+        "{stated} in series of {} V make {} V, not {}; {usual} do",
+        digits(unit),
+        digits(f64::from(stated) * unit),
+        entry.written(&NOMINAL),
+    );
+    entry.problem(if bank.series.is_some() { &SERIES } else { &UNITS }, sentence);
+    Err(Contradiction)
 }
 
-/// A small whole number.
-fn whole(number: f64) -> Option<u32> {
-    (number >= 1.0 && number <= 1e6).then(|| number as u32)
+/// Batteries in all must be whole strings.
+fn units_agree(
+    entry: &mut Entry<'_, '_>,
+    bank: &BankPart,
+    series: Option<u32>,
+    volts: Option<(f64, f64)>,
+) -> Result<(), Contradiction> {
+    let (Some(series), Some(units)) = (series, bank.units) else { return Ok(()) };
+    let sentence = match bank.strings {
+        Some(strings) if strings.checked_mul(series) != Some(units) => format!(
+            "{units} batteries are not {strings} parallel strings of {series}, which are {}; mend the number that is \
+             wrong",
+            strings.saturating_mul(series)
+        ),
+        None if units.checked_rem(series) != Some(0) => {
+            let fewer = units.checked_div(series).unwrap_or(0).max(1).saturating_mul(series);
+            let why = volts.map_or_else(String::new, |(unit, nominal)| {
+                format!(" ({} V of {} V each)", digits(nominal), digits(unit))
+            });
+            format!(
+                "{units} batteries do not make whole strings of {series}{why}; {fewer} or {} do",
+                fewer.saturating_add(series)
+            )
+        }
+        _ => return Ok(()),
+    };
+    entry.problem(&UNITS, sentence);
+    Err(Contradiction)
 }
 
 // MERGE: see above.

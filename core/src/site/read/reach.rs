@@ -200,8 +200,7 @@ impl<'p, 'd> Reach<'p, 'd> {
                 _ if is_doubtful => None,
                 Kind::Bank | Kind::Board => None,
                 Kind::Load if node.is_ac => None,
-                Kind::Load | Kind::Inverter => self.of_load(index, &node, held),
-                Kind::ConverterInput => self.of_load(index, &node, held),
+                Kind::Load | Kind::Inverter | Kind::ConverterInput => self.of_load(index, &node, held),
                 Kind::ControllerInput => self.of_input(index, &node, held),
                 Kind::Array => self.of_array(index, &node, held),
                 Kind::Controller | Kind::Generator => self.of_charger(index, &node, held),
@@ -358,10 +357,9 @@ impl<'p, 'd> Reach<'p, 'd> {
     /// The output of a controller or generator.
     fn of_charger(&mut self, index: usize, node: &Node<'d>, held: Held) -> Option<String> {
         // Its circuit is written the wrong way round: that is reported with its input.
-        if let Some(&input) = self.inputs.get(node.name) {
-            if self.held_with(input).live().is_some() {
-                return None;
-            }
+        let input = self.inputs.get(node.name).copied();
+        if input.is_some_and(|input| self.held_with(input).live().is_some()) {
+            return None;
         }
         if Self::way(&self.out, index).is_none() && node.route.is_none() {
             return Some(format!(

@@ -6,7 +6,7 @@ use alloc::string::String;
 use alloc::vec::Vec;
 
 use super::entry::Found;
-use super::keys::{Key, POWER, Section};
+use super::keys::{CHEMISTRY, Key, POWER, Section};
 use super::log::{Cut, Log, Quoted, nearest};
 use super::nodes::{Placed, text_of};
 use super::plant_keys::{
@@ -196,12 +196,13 @@ fn readings(sections: &Sections<'_>, log: &mut Log) {
         &sections.converters,
     ]);
     let all: Names<'_> = things.union(&circuits).copied().collect();
+    let chemistries = chemistries(sections);
     for &reading in &sections.readings {
         let here = || place(&READING, reading);
         if let Some(at) = text_of(reading, MEASURED_AT.name)
             && known(at, here, &MEASURED_AT, "part or circuit", &all, log)
         {
-            of_such(reading, at, sections, [&things, &circuits, &banks], log);
+            of_such(reading, at, &chemistries, [&things, &circuits, &banks], log);
         }
         let on = reading.table.get(ON.name).and_then(|value| value.get_ref().as_array());
         for item in on.into_iter().flat_map(|list| list.iter()) {
@@ -216,7 +217,7 @@ fn readings(sections: &Sections<'_>, log: &mut Log) {
 fn of_such(
     reading: Found<'_>,
     (at, _): Placed<'_>,
-    sections: &Sections<'_>,
+    chemistries: &BTreeMap<&str, &str>,
     [things, circuits, banks]: [&Names<'_>; 3],
     log: &mut Log,
 ) {
@@ -245,21 +246,24 @@ fn of_such(
         }
     }
     // The electrolyte of a sealed battery cannot be drawn, and that of lithium has no density to tell.
-    let bank = sections.banks.iter().find(|bank| text_of(**bank, "name").is_some_and(|(name, _)| name == at));
-    let own = bank.and_then(|bank| text_of(*bank, "chemistry"));
-    let of_stock = || {
-        let (battery, _) = text_of(*bank?, BATTERY.name)?;
-        let stock =
-            sections.batteries.iter().find(|b| text_of(**b, "name").is_some_and(|(n, _)| n == battery))?;
-        text_of(*stock, "chemistry")
-    };
-    if let Some((chemistry, _)) = own.or_else(of_stock)
-        && matches!(chemistry, "agm" | "gel" | "lfp" | "nmc")
-        && let Some(value) = reading.table.get(DENSITY.name)
+    if let Some(value) = reading.table.get(DENSITY.name)
+        && let Some(chemistry) = chemistries.get(at)
+        && matches!(*chemistry, "agm" | "gel" | "lfp" | "nmc")
     {
         let sentence = format!(
-            "the electrolyte of {chemistry} cannot be drawn; take it out, or mend the bank's chemistry"
+            "no electrolyte can be drawn from {chemistry}; take it out, or mend the bank's chemistry"
         );
         log.push(value.span().start, format!("{}, {}", place(&READING, reading), DENSITY.name), sentence);
     }
+}
+
+/// The chemistry of every bank that states it, or whose battery in the stock does.
+fn chemistries<'d>(sections: &Sections<'d>) -> BTreeMap<&'d str, &'d str> {
+    let pair = |found: &Found<'d>| Some((text_of(*found, "name")?.0, text_of(*found, CHEMISTRY.name)?.0));
+    let stock: BTreeMap<&str, &str> = sections.batteries.iter().filter_map(pair).collect();
+    let of_stock = |bank: &Found<'d>| {
+        let battery = text_of(*bank, BATTERY.name)?.0;
+        Some((text_of(*bank, "name")?.0, *stock.get(battery)?))
+    };
+    sections.banks.iter().filter_map(|bank| pair(bank).or_else(|| of_stock(bank))).collect()
 }

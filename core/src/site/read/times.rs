@@ -59,23 +59,15 @@ fn twelve<Q: Textual>(entry: &mut Entry<'_, '_>, key: &Key) -> Option<[Q; 12]> {
     let before = entry.log.count();
     let list: Vec<Q> = entry.quantities(key);
     let count = list.len();
-    match list.try_into() {
-        Ok(array) => Some(array),
-        Err(_) => {
-            // A value that could not be read was reported as such.
-            if entry.log.count() == before {
-                let months = if count == 1 { "month" } else { "months" };
-                entry.problem(
-                    key,
-                    format!(
-                        "the list has {count} {months}; twelve are needed, January first: {}",
-                        key.example
-                    ),
-                );
-            }
-            None
-        }
+    let twelve = list.try_into().ok();
+    // A value that could not be read was reported as such.
+    if twelve.is_none() && entry.log.count() == before {
+        let months = if count == 1 { "month" } else { "months" };
+        let sentence =
+            format!("the list has {count} {months}; twelve are needed, January first: {}", key.example);
+        entry.problem(key, sentence);
     }
+    twelve
 }
 
 type Ambient = (ThermodynamicTemperature, ThermodynamicTemperature);

@@ -140,18 +140,20 @@ proptest! {
     #[test]
     fn shuffled_sections_never_panic(order in prop::collection::vec(0..VALID.matches("\n[").count(), 0..60)) {
         let sections: Vec<&str> = VALID.split("\n\n").collect();
-        let shuffled: Vec<&str> = order.into_iter().filter_map(|at| sections.get(at)).flat_map(|s| [s, "\n"]).collect();
+        let shuffled: Vec<&str> =
+            order.into_iter().filter_map(|at| sections.get(at)).flat_map(|section| [section, "\n\n"]).collect();
         is_orderly(&shuffled.concat())?;
     }
 
     /// Every value of the whole document against every other: numbers, units, words and names in the wrong place.
     #[test]
-    fn swapped_values_never_panic(swaps in prop::collection::vec((0..VALID.lines().count(), 0..VALID.lines().count()), 1..30)) {
+    fn swapped_values_never_panic(
+        swaps in prop::collection::vec((0..VALID.lines().count(), 0..VALID.lines().count()), 1..30)
+    ) {
         let mut lines: Vec<String> = VALID.lines().map(ToString::to_string).collect();
         for (one, other) in swaps {
-            let value = VALID.lines().nth(other).and_then(|line| line.split_once(" = ")).map(|(_, value)| value);
-            let key = VALID.lines().nth(one).and_then(|line| line.split_once(" = ")).map(|(key, _)| key);
-            if let (Some(key), Some(value)) = (key, value) {
+            let pair = |at: usize| VALID.lines().nth(at).and_then(|line| line.split_once(" = "));
+            if let (Some((key, _)), Some((_, value))) = (pair(one), pair(other)) {
                 lines[one] = [key, " = ", value].concat();
             }
         }
@@ -164,19 +166,22 @@ proptest! {
         numbers in prop::collection::vec(prop::option::of(0_u32..100_001), 6),
         volts in prop::collection::vec(prop::option::of(-2.0..3.0_f64), 4),
     ) {
+        let volts: Vec<Option<String>> =
+            volts.into_iter().map(|power| power.map(|power| libm::pow(10.0, power).to_string())).collect();
         let mut text = String::from("format = 1\n[[bank]]\nname = \"a\"\nchemistry = \"lfp\"\n");
-        for (key, volts) in ["nominal", "unit"].iter().zip(&volts) {
-            if let Some(volts) = volts { text += &alloc::format!("{key} = \"{} V\"\n", libm::pow(10.0, *volts)); }
+        let with_unit = [("nominal", "V"), ("unit", "V"), ("capacity", "Ah"), ("unit_capacity", "Ah")];
+        for ((key, unit), value) in with_unit.iter().zip(&volts) {
+            if let Some(value) = value {
+                text.extend([key, " = \"", value.as_str(), " ", unit, "\"\n"]);
+            }
         }
-        for (key, charge) in ["capacity", "unit_capacity"].iter().zip(&volts[2..]) {
-            if let Some(charge) = charge { text += &alloc::format!("{key} = \"{} Ah\"\n", libm::pow(10.0, *charge)); }
-        }
-        for (key, number) in ["units", "series", "strings"].iter().zip(&numbers) {
-            if let Some(number) = number { text += &alloc::format!("{key} = {number}\n"); }
-        }
-        text += "[[array]]\nname = \"b\"\n";
-        for (key, number) in ["modules", "series", "strings"].iter().zip(&numbers[3..]) {
-            if let Some(number) = number { text += &alloc::format!("{key} = {number}\n"); }
+        for (at, key) in ["units", "series", "strings", "modules", "series", "strings"].iter().enumerate() {
+            if at == 3 {
+                text += "[[array]]\nname = \"b\"\n";
+            }
+            if let Some(number) = numbers[at] {
+                text.extend([key, " = ", number.to_string().as_str(), "\n"]);
+            }
         }
         is_orderly(&text)?;
     }
