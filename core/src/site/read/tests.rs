@@ -285,7 +285,7 @@ fn figures_of_a_bank_agree_or_not() {
             "nominal = '24 V'\nunit = '6 V'\nunits = 8\nunit_capacity = '225 Ah'\ncapacity = '225 Ah'",
         ),
         ("flooded", "nominal = '24 V'\nunit = '48 V'"),
-        ("flooded", "nominal = '26 V'\nunit = '2.2 V'\nseries = 12"),
+        ("flooded", "nominal = '26 V'\nunit = '2 V'\nseries = 12"),
         ("lfp", "nominal = '48 V'\nunit = '3.2 V'\nunits = 18"),
         ("lfp", "nominal = '12 V'\nunit = '3.2 V'\nunits = 8\nstrings = 3"),
         ("agm", "nominal = '24 V'\nunit = '12 V'\nunits = 3"),
@@ -295,6 +295,31 @@ fn figures_of_a_bank_agree_or_not() {
         assert_eq!(found.lines().count(), 1, "{chemistry}: {figures}: {found}");
         assert!(found.starts_with("line 1"), "{found}");
     }
+}
+
+/// A voltage that no whole number of cells has.
+// MERGE: with `battery::cells`, see bank.rs.
+#[cfg(any())]
+#[test]
+fn a_chemistry_has_voltages_of_its_own() {
+    let bank = |figures: &str| {
+        problems(&SMALL.replace(
+            "chemistry = \"lfp\"\nnominal = \"24 V\"\ncapacity = \"400 Ah\"\ncut_off = \"21 V\"\nhighest = \"29.2 V\"",
+            figures,
+        ))
+    };
+    for (figures, begin) in [
+        ("chemistry = 'nmc'\nnominal = '24 V'", "line 10, [[bank]] \"house\", nominal: nominal voltage is 24 V; NMC"),
+        ("chemistry = 'agm'\nnominal = '13 V'", "line 10, [[bank]] \"house\", nominal: nominal voltage is 13 V; lead"),
+        ("chemistry = 'gel'\nunit = '3 V'", "line 10, [[bank]] \"house\", unit: nominal voltage is 3 V; lead"),
+    ] {
+        let found = bank(figures);
+        assert!(found.starts_with(begin) && found.lines().count() == 1, "{found}");
+    }
+    let stock = "[[stock.battery]]\nname = \"a\"\nchemistry = \"lfp\"\nnominal = \"13 V\"\ncapacity = \"100 Ah\"\n";
+    let found = problems(&format!("{SMALL}{stock}"));
+    assert!(found.starts_with("line 32, [[stock.battery]] \"a\", nominal: nominal voltage is 13 V; LFP"), "{found}");
+    assert_eq!(bank("chemistry = 'lfp'\nnominal = '48 V'"), "none");
 }
 
 #[test]
