@@ -2,13 +2,14 @@
 //!
 //! The text becomes a tree of spans ([`syntax`]), each section is walked against its declared keys
 //! ([`keys`], [`plant_keys`], [`sections`], [`entry`]), and what stands between sections is checked by itself ([`ends`],
-//! [`reach`], [`references`]), so that no slip in one place hides another.
+//! [`reach`], [`fed`], [`references`]), so that no slip in one place hides another.
 
 mod bank;
 mod circuits;
 mod ends;
 mod entry;
 mod equipment;
+mod fed;
 mod keys;
 mod log;
 mod meant;

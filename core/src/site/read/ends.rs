@@ -1,5 +1,5 @@
 //! What stands between the sections: names, ends of circuits, and loops. What is fed and what is not tells
-//! [`super::reach`].
+//! [`super::fed`].
 
 use alloc::borrow::ToOwned;
 use alloc::collections::{BTreeMap, BTreeSet};
