@@ -122,8 +122,8 @@ pub(super) const CONTINUOUS: Key = flag("continuous");
 pub(super) const START: Key = key("start", "a current", "\"30 A\"", AMPERES);
 pub(super) const USE: Key = key("use", "a use", "\"lighting\"", ANY);
 
-pub(super) const FROM: Key = key("from", "the name of a bank or board", "\"house\"", ANY);
-pub(super) const TO: Key = key("to", "the name of a board, load, inverter or bank", "\"pump\"", ANY);
+pub(super) const FROM: Key = key("from", "the name of a bank, board or source", "\"house\"", ANY);
+pub(super) const TO: Key = key("to", "the name of what it feeds", "\"pump\"", ANY);
 pub(super) const ONE_WAY: Key = key("one_way", "a length", "\"2.5 m\"", METRES);
 pub(super) const POSITIVE_LENGTH: Key = key("positive_length", "a length", "\"2.5 m\"", METRES);
 pub(super) const NEGATIVE_LENGTH: Key = key("negative_length", "a length", "\"3 m\"", METRES);
