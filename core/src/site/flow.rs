@@ -63,6 +63,10 @@ pub(super) struct Flow {
     pub ohms_before: f64,
     /// What stands at its end, seen from the source.
     pub end: Option<Item>,
+    /// It is its sources, not its loads, that drive the design current.
+    pub charged: bool,
+    /// Greatest current of a source that limits itself, where the circuit leaves one, A.
+    pub limit: Option<f64>,
 }
 
 /// Conductors, positive and negative, and joints of a circuit.
@@ -159,6 +163,10 @@ impl Flows {
                 flow.current = flow.current.max(stated);
                 flow.low_current = flow.low_current.map(|low| low.max(stated));
             }
+        }
+        for tree in trees {
+            flows.take_chargers(site, tree);
+            flows.take_limits(site, tree);
         }
         flows
     }
@@ -352,6 +360,8 @@ const fn none() -> Flow {
         started: None,
         ohms_before: 0.0,
         end: None,
+        charged: false,
+        limit: None,
     }
 }
 

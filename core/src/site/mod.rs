@@ -18,6 +18,7 @@ mod reach;
 mod read;
 mod report;
 mod smaller;
+mod sources;
 mod state;
 mod system;
 mod text;
