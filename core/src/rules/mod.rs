@@ -13,6 +13,7 @@ mod iec;
 mod overrides;
 mod practice;
 mod query;
+mod surroundings;
 mod table;
 mod us;
 mod usual;
@@ -30,5 +31,9 @@ pub use practice::{PracticeFigure, practice_figure};
 pub use query::{
     Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
     LoadUse, Space, Terms,
+};
+pub use surroundings::{
+    Asked, Bonding, BondingRow, OPENING_CM2_PER_M3_H, SPARK_DISTANCE_MM, SurgeLength, Surroundings,
+    TouchLimits,
 };
 pub use table::{AmpacityTable, Band, Cell, Column, FactorColumn, FactorTable};
