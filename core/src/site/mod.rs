@@ -2,6 +2,7 @@
 
 mod bank;
 mod complete;
+mod energy;
 mod fault;
 mod finding;
 mod flow;
