@@ -47,7 +47,7 @@ pub struct DayDemand {
 }
 
 impl DayDemand {
-    const NONE: Self = {
+    pub(super) const NONE: Self = {
         const NOUGHT: Energy =
             Energy { dimension: core::marker::PhantomData, units: core::marker::PhantomData, value: 0.0 };
         Self {
