@@ -257,7 +257,7 @@ pub struct LeadAcidSteps {
 /// })?;
 /// assert_eq!(steps.governed_by, CapacityGoverned::Autonomy);
 /// assert_eq!(readable(steps.capacity).to_string(), "409 Ah"); // 250/0.8·1.19·1.1
-/// assert_eq!(readable(steps.functional_time.unwrap()).to_string(), "81.8 h");
+/// assert_eq!(readable(steps.functional_time.unwrap()).to_string(), "3.41 d");
 /// # Ok::<(), ampwright::Error>(())
 /// ```
 pub fn lead_acid_capacity(need: &LeadAcidNeed) -> Result<LeadAcidSteps, Error> {
@@ -648,7 +648,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::functional_time, quantity::{parse, readable}};
     /// let result = functional_time(parse("400 Ah")?, parse("8 A")?)?;
-    /// assert_eq!(readable(result).to_string(), "50 h");
+    /// assert_eq!(readable(result).to_string(), "2.08 d");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn functional_time(

@@ -135,12 +135,12 @@ fn checked_margin(margin: TemperatureInterval) -> Result<f64, Error> {
 /// As [`freezing_point()`].
 ///
 /// # Example
-/// A flooded battery in a hut at −15 °C, 5 K left, must stay above two fifths:
+/// A flooded battery in a hut at −15 °C, 5 K left, must stay above 37 %:
 /// ```
 /// # use ampwright::battery::{Chemistry, freezing_floor};
 /// # use ampwright::quantity::parse;
 /// let floor = freezing_floor(Chemistry::Flooded, parse("-15 degC")?, parse("5 K")?)?.unwrap();
-/// assert!((floor.get() - 0.417).abs() < 0.001, "{floor:?}");
+/// assert!((floor.get() - 0.367).abs() < 0.001, "{floor:?}");
 /// # Ok::<(), ampwright::Error>(())
 /// ```
 pub fn freezing_floor(

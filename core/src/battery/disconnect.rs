@@ -76,8 +76,8 @@ pub struct Disconnect {
 /// # use ampwright::quantity::{parse, readable};
 /// let slow = disconnect(Chemistry::Flooded, 6, parse("0.05 /h")?, parse("25 degC")?)?;
 /// let fast = disconnect(Chemistry::Flooded, 6, parse("0.2 /h")?, parse("25 degC")?)?;
-/// assert_eq!(readable(slow.disconnect).to_string(), "11.8 V");
-/// assert_eq!(readable(fast.disconnect).to_string(), "11.2 V");
+/// assert_eq!(readable(slow.disconnect).to_string(), "11.81 V");
+/// assert_eq!(readable(fast.disconnect).to_string(), "11.16 V");
 /// # Ok::<(), ampwright::Error>(())
 /// ```
 pub fn disconnect(
@@ -120,8 +120,8 @@ calculations! {
     /// ```
     /// use ampwright::{battery::{Chemistry, disconnect_voltage}, quantity::{parse, readable}};
     /// let result = disconnect_voltage(Chemistry::Lfp, parse("4")?, parse("0.2 /h")?, parse("25 degC")?)?;
-    /// assert_eq!(readable(result.disconnect).to_string(), "12.6 V");
-    /// assert_eq!(readable(result.reconnect).to_string(), "13.3 V");
+    /// assert_eq!(readable(result.disconnect).to_string(), "12.58 V");
+    /// assert_eq!(readable(result.reconnect).to_string(), "13.28 V");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn disconnect_voltage(

@@ -256,7 +256,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::kinetic_lifetime, quantity::{parse, readable}};
     /// let result = kinetic_lifetime(parse("2 Ah")?, parse("0.625")?, parse("0.6912 /h")?, parse("0.96 A")?)?;
-    /// assert_eq!(readable(result).to_string(), "1.51 h");
+    /// assert_eq!(readable(result).to_string(), "1.519 h");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn kinetic_lifetime(

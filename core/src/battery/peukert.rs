@@ -15,7 +15,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::peukert_exponent, quantity::{parse, readable}};
     /// let result = peukert_exponent(parse("120 Ah")?, parse("20 h")?, parse("100 Ah")?, parse("5 h")?)?;
-    /// assert_eq!(readable(result).to_string(), "1.15");
+    /// assert_eq!(readable(result).to_string(), "1.151");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn peukert_exponent(

@@ -286,7 +286,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::{Chemistry, float_voltage}, quantity::{parse, readable}};
     /// let result = float_voltage(Chemistry::Gel, parse("6")?, parse("25 degC")?)?;
-    /// assert_eq!(readable(result).to_string(), "13.7 V");
+    /// assert_eq!(readable(result).to_string(), "13.65 V");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn float_voltage(
@@ -344,7 +344,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::compensated_voltage, quantity::{parse, readable}};
     /// let result = compensated_voltage(parse("14.6 V")?, parse("6")?, parse("-5.04 mV/K")?, parse("80 degF")?, parse("70 degF")?)?;
-    /// assert_eq!(readable(result).to_string(), "14.8 V");
+    /// assert_eq!(readable(result).to_string(), "14.77 V");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn compensated_voltage(

@@ -78,7 +78,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::{ChargeStage, Chemistry, ventilation_flow}, quantity::{parse, readable}};
     /// let result = ventilation_flow(Chemistry::Flooded, ChargeStage::Boost, parse("12")?, parse("400 Ah")?)?;
-    /// assert_eq!(readable(result).to_string(), "4.8 m³/h");
+    /// assert_eq!(readable(result).to_string(), "4.8 m3/h");
     /// assert!(ventilation_flow(Chemistry::Lfp, ChargeStage::Boost, parse("8")?, parse("400 Ah")?).is_err());
     /// # Ok::<(), ampwright::Error>(())
     /// ```

@@ -163,7 +163,7 @@ calculations! {
     /// ```
     /// use ampwright::{battery::{Chemistry, cycle_wear}, quantity::{parse, readable}};
     /// let result = cycle_wear(Chemistry::Lfp, parse("40 %")?, parse("365")?)?;
-    /// assert_eq!(readable(result).to_string(), "0.122");
+    /// assert_eq!(readable(result).to_string(), "0.1217");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn cycle_wear(
