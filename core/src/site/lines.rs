@@ -7,7 +7,7 @@ use super::energy::DayDemand;
 use crate::battery::Chemistry;
 use crate::citation::Citation;
 use crate::quantity::{
-    ElectricCharge, ElectricCurrent, ElectricPotential, Energy, Power, Ratio, Time, Volume,
+    ElectricCharge, ElectricCurrent, ElectricPotential, Energy, Power, Ratio, Time,
 };
 
 /// One step of a derivation.
@@ -163,8 +163,6 @@ pub struct GeneratorLine {
     pub lasting: Option<ElectricCurrent>,
     /// Hours from greatest depth to full, absorption tail included.
     pub recharge: Option<Time>,
-    /// Fuel for that.
-    pub fuel: Option<Volume>,
     /// How it came to that.
     pub steps: Vec<Step>,
 }

@@ -3,6 +3,7 @@
 mod bank;
 mod check;
 mod complete;
+mod describe;
 mod energy;
 mod fault;
 mod finding;
@@ -24,6 +25,7 @@ mod report;
 mod smaller;
 mod sources;
 mod state;
+mod supply;
 mod system;
 mod text;
 mod trust;
