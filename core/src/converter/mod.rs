@@ -1,12 +1,16 @@
 //! Converters: charge controllers, DC–DC converters, inverters, chargers.
 
 mod charger;
+mod demand;
+mod efficiency;
 mod inrush;
 mod inverter;
 
 use crate::catalogue::Entry;
 
 pub use charger::*;
+pub use demand::*;
+pub use efficiency::*;
 pub use inrush::*;
 pub use inverter::*;
 

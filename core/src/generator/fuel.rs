@@ -1,6 +1,6 @@
 //! Fuel of engine sets: a published chart for diesel, or the maker's figures.
 
-use uom::si::power::kilowatt;
+use uom::si::power::{kilowatt, watt};
 use uom::si::time::hour;
 use uom::si::volume::liter;
 
@@ -76,10 +76,7 @@ impl FuelCurve {
     /// row and the maker's figures are needed, and above 500 kW.
     pub fn diesel(rating: Power) -> Result<Self, Error> {
         let kilowatts = rating.get::<kilowatt>();
-        if !(kilowatts > 0.0 && kilowatts <= f64::MAX) {
-            let (value, allowed) = (kilowatts, Allowed::Above(0.0));
-            return Err(Error::OutOfRange { name: "rated_power", value, unit: "kW", allowed });
-        }
+        Allowed::Above(0.0).check("rated_power", kilowatts, "kW")?;
         let ends = |end| Error::TableEnds {
             what: "rated power of the engine set",
             value: kilowatts,
@@ -115,28 +112,14 @@ impl FuelCurve {
                 needed: Self::ROOM,
             });
         }
-        let watts = rating.get::<uom::si::power::watt>();
-        if !(watts > 0.0 && watts <= f64::MAX) {
-            return Err(Error::OutOfRange {
-                name: "rating",
-                value: watts,
-                unit: "W",
-                allowed: Allowed::Above(0.0),
-            });
-        }
+        Allowed::Above(0.0).check("rating", rating.get::<watt>(), "W")?;
         let citation = Citation::new("as stated", "fuel of the engine set", Seen::Stated);
         let mut curve = Self { rating, points: [(0.0, 0.0); Self::ROOM], count: points.len(), citation };
         let mut before = (-1.0, 0.0);
         for (cell, &(load, fuel)) in curve.points.iter_mut().zip(points) {
             let (load, fuel) = (load.value, litres_per_hour(fuel));
-            if !(0.0..=1.2).contains(&load) {
-                let allowed = Allowed::Between(0.0, 1.2);
-                return Err(Error::OutOfRange { name: "load", value: load, unit: "", allowed });
-            }
-            if !(fuel > 0.0 && fuel <= f64::MAX) {
-                let allowed = Allowed::Above(0.0);
-                return Err(Error::OutOfRange { name: "fuel", value: fuel, unit: "L/h", allowed });
-            }
+            Allowed::Between(0.0, 1.2).check("load", load, "")?;
+            Allowed::Above(0.0).check("fuel", fuel, "L/h")?;
             if load <= before.0 || fuel < before.1 {
                 let why = "loads must rise, and fuel must not fall with them";
                 return Err(Error::Contradiction { name: "load", value: load, unit: "", why });
@@ -170,15 +153,8 @@ impl FuelCurve {
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     pub fn at(&self, output: Power) -> Result<VolumeFlow, Error> {
-        let watts = output.get::<uom::si::power::watt>();
-        if !(watts >= 0.0 && watts <= f64::MAX) {
-            return Err(Error::OutOfRange {
-                name: "output power",
-                value: watts,
-                unit: "W",
-                allowed: Allowed::AtLeast(0.0),
-            });
-        }
+        let watts = output.get::<watt>();
+        Allowed::AtLeast(0.0).check("output power", watts, "W")?;
         let load = (output / self.rating).value;
         let litres = self.litres_per_hour(load).ok_or(Error::Contradiction {
             name: "output power",

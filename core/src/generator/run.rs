@@ -75,19 +75,16 @@ pub fn engine_run(
     let bulk = full_rate * time.bulk.get::<hour>();
     let tail = match recharge.knee {
         Some(knee) if time.tail.value > 0.0 => {
-            let begin = (1.0 - recharge.start.value) / (1.0 - knee.value);
-            // Above the knee from the beginning, the current begins as the sources give it all the same: see the law.
-            let part = begin.min(1.0);
-            let end = part * (1.0 - recharge.target.value) / (1.0 - knee.value.max(recharge.start.value));
-            let decay = time.tail.get::<hour>() / libm::log(part / end);
-            tail_fuel(fuel, charging, other, (part, end), decay)
+            // In the tail the current is what is missing from full, over what was missing at the knee.
+            let part = |state: f64| (1.0 - state) / (1.0 - knee.value);
+            let (from, to) = (part(knee.value.max(recharge.start.value)), part(recharge.target.value));
+            let decay = time.tail.get::<hour>() / libm::log(from / to);
+            tail_fuel(fuel, charging, other, (from, to), decay)
         }
         _ => 0.0,
     };
     let litres = bulk + tail;
-    if !litres.is_finite() {
-        return Err(Error::OutOfRange { name: "fuel", value: litres, unit: "L", allowed: Allowed::Finite });
-    }
+    Allowed::Finite.check("fuel", litres, "L")?;
     Ok(EngineRun { bulk: time.bulk, tail: time.tail, total: time.total, fuel: Volume::new::<liter>(litres) })
 }
 
@@ -108,13 +105,7 @@ impl Recharge {
                 self.efficiency,
             );
         }
-        let within = |name, part: Ratio| {
-            if (0.0..=1.0).contains(&part.value) {
-                return Ok(());
-            }
-            let allowed = Allowed::Between(0.0, 1.0);
-            Err(Error::OutOfRange { name, value: part.value, unit: "", allowed })
-        };
+        let within = |name, part: Ratio| Allowed::Between(0.0, 1.0).check(name, part.value, "");
         within("start", self.start)?;
         within("target", self.target)?;
         if self.start > self.target {
@@ -159,9 +150,6 @@ fn tail_fuel(fuel: &FuelCurve, charging: Power, other: Power, (from, to): (f64, 
 /// [`Error::OutOfRange`] where the hours are negative or not finite, and as [`FuelCurve::at`].
 pub fn fuel_for(fuel: &FuelCurve, output: Power, duration: Time) -> Result<Volume, Error> {
     let hours = duration.get::<hour>();
-    if !(hours >= 0.0 && hours <= f64::MAX) {
-        let allowed = Allowed::AtLeast(0.0);
-        return Err(Error::OutOfRange { name: "duration", value: hours, unit: "h", allowed });
-    }
+    Allowed::AtLeast(0.0).check("duration", hours, "h")?;
     Ok(fuel.at(output)? * duration)
 }

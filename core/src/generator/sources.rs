@@ -40,15 +40,12 @@ pub enum LoadDump {
 }
 
 impl SourceKind {
-    /// What is taken where nothing is stated: a turbine, a bare alternator without load have no limit of their own, a
-    /// converter holds its voltage.
-    ///
-    /// Common practice, no source. An array's controller is not taken to bear it: makers warn of it.
+    /// What is taken where nothing is stated: machines that turn drive the voltage up when their load is gone; of the
+    /// rest it is not known. Common practice, no source.
     pub const fn usual_load_dump(self) -> LoadDump {
         match self {
             Self::Alternator | Self::Wind | Self::Hydro => LoadDump::DoesNotBear,
-            Self::Array => LoadDump::Unknown,
-            Self::EngineSet | Self::Shore | Self::Converter => LoadDump::Bears,
+            Self::Array | Self::EngineSet | Self::Shore | Self::Converter => LoadDump::Unknown,
         }
     }
 }
@@ -145,10 +142,7 @@ impl ChargeSource {
             SourceKind::Alternator => ALTERNATOR_HOT,
             _ => 1.0,
         }));
-        if !(0.0..=1.0).contains(&part.value) {
-            let allowed = Allowed::Between(0.0, 1.0);
-            return Err(Error::OutOfRange { name: "lasting part", value: part.value, unit: "", allowed });
-        }
+        Allowed::Between(0.0, 1.0).check("lasting part", part.value, "")?;
         let mut greatest = (self.nameplate, LimitedBy::Nameplate);
         let mut lasting = (self.nameplate * part, LimitedBy::Lasting);
         if lasting.0 == self.nameplate {
@@ -195,12 +189,7 @@ pub fn source_sum(sources: &[ChargeSource], into: &mut [Contribution]) -> Result
 }
 
 fn at_least_0(name: &'static str, current: ElectricCurrent) -> Result<(), Error> {
-    let value = current.get::<ampere>();
-    // Written so that NaN fails.
-    if value >= 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "A", allowed: Allowed::AtLeast(0.0) })
+    Allowed::AtLeast(0.0).check(name, current.get::<ampere>(), "A")
 }
 
 calculations! {

@@ -6,9 +6,9 @@
 use uom::si::electric_current::ampere;
 use uom::si::power::watt;
 
-use super::schedule::{HALF_HOURS, MONTHS, Months};
-use super::start::at_least;
-use crate::error::Error;
+use super::months::{MONTHS, Months};
+use super::schedule::HALF_HOURS;
+use crate::error::{Allowed, Error};
 use crate::quantity::{ElectricCurrent, Power};
 
 /// Half-hours and months in which a load may draw.
@@ -148,7 +148,7 @@ fn greatest<Q: Copy>(
             return Err(Error::WrongCount { what: "loads", given: list.len(), needed: occasions.len() });
         }
         for &value in list {
-            at_least("load", plain(value), 0.0, unit)?;
+            Allowed::AtLeast(0.0).check("load", plain(value), unit)?;
         }
     }
     let mut most = Coincidence {
@@ -173,8 +173,8 @@ fn greatest<Q: Copy>(
             most.with_start = WithStart { sum: sum + largest, slot: Some(slot), starting };
         }
     }
-    at_least("sum of the loads", most.running, 0.0, unit)?;
-    at_least("sum of the loads", most.with_start.sum, 0.0, unit)?;
+    Allowed::AtLeast(0.0).check("sum of the loads", most.running, unit)?;
+    Allowed::AtLeast(0.0).check("sum of the loads", most.with_start.sum, unit)?;
     let WithStart { sum, slot, starting } = most.with_start;
     Ok(Coincidence {
         running: quantity(most.running),

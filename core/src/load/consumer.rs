@@ -5,8 +5,9 @@ use uom::si::electric_potential::volt;
 
 use super::coincidence::Occasion;
 use super::duty::Duty;
-use super::schedule::{Schedule, checked_month};
-use super::start::{Start, at_least};
+use super::months::checked_month;
+use super::schedule::Schedule;
+use super::start::Start;
 use crate::error::{Allowed, Error};
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, Energy, Power, Ratio, ThermodynamicTemperature, Time,
@@ -34,20 +35,20 @@ impl Draw {
     /// # Errors
     /// [`Error::OutOfRange`] where the voltage is not above 0, or the draw negative or not finite.
     pub fn power_at(self, voltage: ElectricPotential) -> Result<Power, Error> {
-        above_zero("voltage", voltage)?;
+        Allowed::Above(0.0).check("voltage", voltage.get::<volt>(), "V")?;
         let power = match self {
             Self::Power(power) => power,
             Self::Current(current) => {
-                at_least("current", current.value, 0.0, "A")?;
+                Allowed::AtLeast(0.0).check("current", current.value, "A")?;
                 current * voltage
             }
             Self::Resistive { power, at } => {
-                above_zero("voltage at which the power is stated", at)?;
+                Allowed::Above(0.0).check("voltage at which the power is stated", at.get::<volt>(), "V")?;
                 let part = voltage / at;
                 power * part * part
             }
         };
-        at_least("power", power.value, 0.0, "W")?;
+        Allowed::AtLeast(0.0).check("power", power.value, "W")?;
         Ok(power)
     }
 
@@ -67,18 +68,9 @@ impl Draw {
     /// ```
     pub fn current_at(self, voltage: ElectricPotential) -> Result<ElectricCurrent, Error> {
         let current = self.power_at(voltage)? / voltage;
-        at_least("current", current.get::<ampere>(), 0.0, "A")?;
+        Allowed::AtLeast(0.0).check("current", current.get::<ampere>(), "A")?;
         Ok(current)
     }
-}
-
-fn above_zero(name: &'static str, voltage: ElectricPotential) -> Result<(), Error> {
-    let value = voltage.get::<volt>();
-    // Written so that NaN fails.
-    if value > 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "V", allowed: Allowed::Above(0.0) })
 }
 
 /// On which side of an inverter a load hangs.
@@ -174,8 +166,13 @@ impl Load {
     /// [`Error::Contradiction`] where an AC load is not stated by its power, or more units start than there are.
     pub fn power_at(&self, voltage: ElectricPotential) -> Result<Power, Error> {
         self.check()?;
-        let power = self.draw.power_at(voltage)? * f64::from(self.count);
-        at_least("power", power.value, 0.0, "W")?;
+        let one = match (self.terminals, self.draw) {
+            // The inverter holds the voltage for which it is stated.
+            (Terminals::Ac { .. }, Draw::Resistive { power, .. }) => Draw::Power(power),
+            (_, draw) => draw,
+        };
+        let power = one.power_at(voltage)? * f64::from(self.count);
+        Allowed::AtLeast(0.0).check("power", power.value, "W")?;
         Ok(power)
     }
 
@@ -234,7 +231,7 @@ impl Load {
             Day::Mean => self.schedule.mean_hours(),
         };
         let energy = power * (hours * duty);
-        at_least("energy", energy.value, 0.0, "J")?;
+        Allowed::AtLeast(0.0).check("energy", energy.value, "J")?;
         Ok(energy)
     }
 
@@ -264,7 +261,7 @@ impl Load {
     }
 
     fn check(&self) -> Result<(), Error> {
-        at_least("count", f64::from(self.count), 1.0, "")?;
+        Allowed::AtLeast(1.0).check("count", f64::from(self.count), "")?;
         if let Some(start) = self.start {
             start.check()?;
             if start.at_once > self.count {
@@ -277,11 +274,7 @@ impl Load {
             }
         }
         if let Terminals::Ac { power_factor } = self.terminals {
-            // Written so that NaN fails.
-            if !(power_factor.value > 0.0 && power_factor.value <= 1.0) {
-                let (value, allowed) = (power_factor.value, Allowed::AboveUpTo(0.0, 1.0));
-                return Err(Error::OutOfRange { name: "power factor", value, unit: "", allowed });
-            }
+            Allowed::AboveUpTo(0.0, 1.0).check("power factor", power_factor.value, "")?;
             if let Draw::Current(current) = self.draw {
                 return Err(Error::Contradiction {
                     name: "current",

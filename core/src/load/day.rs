@@ -127,11 +127,7 @@ pub fn energy_by_month(
 }
 
 fn checked(energy: Energy) -> Result<(), Error> {
-    let value = energy.get::<joule>();
-    if value >= 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name: "energy", value, unit: "J", allowed: Allowed::AtLeast(0.0) })
+    Allowed::AtLeast(0.0).check("energy", energy.get::<joule>(), "J")
 }
 
 calculations! {

@@ -21,9 +21,9 @@ use crate::quantity::{Ratio, ThermodynamicTemperature};
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Duty {
     cold: ThermodynamicTemperature,
-    cold_duty: Ratio,
+    in_cold: Ratio,
     warm: ThermodynamicTemperature,
-    warm_duty: Ratio,
+    in_warm: Ratio,
 }
 
 impl Duty {
@@ -47,7 +47,7 @@ impl Duty {
     pub fn full() -> Self {
         let at = ThermodynamicTemperature::new::<degree_celsius>;
         let one = Ratio::new::<ratio>(1.0);
-        Self { cold: at(0.0), cold_duty: one, warm: at(1.0), warm_duty: one }
+        Self { cold: at(0.0), in_cold: one, warm: at(1.0), in_warm: one }
     }
 
     /// At two ambients, the first the colder; a heater has the greater duty in the cold.
@@ -56,12 +56,12 @@ impl Duty {
     /// As [`duty_at_ambient`].
     pub fn between(
         cold: ThermodynamicTemperature,
-        cold_duty: Ratio,
+        in_cold: Ratio,
         warm: ThermodynamicTemperature,
-        warm_duty: Ratio,
+        in_warm: Ratio,
     ) -> Result<Self, Error> {
-        duty_at_ambient(cold, cold, cold_duty, warm, warm_duty)?;
-        Ok(Self { cold, cold_duty, warm, warm_duty })
+        duty_at_ambient(cold, cold, in_cold, warm, in_warm)?;
+        Ok(Self { cold, in_cold, warm, in_warm })
     }
 
     /// At an ambient.
@@ -69,7 +69,7 @@ impl Duty {
     /// # Errors
     /// [`Error::OutOfRange`] where the ambient is not −90 to 150 °C.
     pub fn at(&self, ambient: ThermodynamicTemperature) -> Result<Ratio, Error> {
-        duty_at_ambient(ambient, self.cold, self.cold_duty, self.warm, self.warm_duty)
+        duty_at_ambient(ambient, self.cold, self.in_cold, self.warm, self.in_warm)
     }
 
     /// The greatest between two ambients: at one of them, since the line has no hump.

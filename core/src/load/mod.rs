@@ -4,8 +4,10 @@ mod coincidence;
 mod consumer;
 mod day;
 mod duty;
+mod months;
 mod schedule;
 mod start;
+mod window;
 
 use crate::catalogue::Entry;
 
@@ -19,8 +21,10 @@ pub use day::{
     standing_share,
 };
 pub use duty::{Duty, duty_at_ambient};
-pub use schedule::{HALF_HOURS, MONTHS, Months, Schedule, Window};
+pub use months::{MONTHS, Months};
+pub use schedule::{HALF_HOURS, Schedule};
 pub use start::{Start, StartingPower, apparent_power, starting_power};
+pub use window::Window;
 
 /// Every calculation of this room, by file.
 pub const CATALOGUE: &[&[Entry]] = &[duty::ENTRIES, day::ENTRIES, start::ENTRIES];

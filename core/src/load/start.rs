@@ -26,18 +26,10 @@ impl Start {
     }
 
     pub(super) fn check(&self) -> Result<(), Error> {
-        at_least("start multiple", self.multiple.value, 1.0, "")?;
-        at_least("start duration", self.duration.value, 0.0, "s")?;
-        at_least("units that start at once", f64::from(self.at_once), 1.0, "")
+        Allowed::AtLeast(1.0).check("start multiple", self.multiple.value, "")?;
+        Allowed::AtLeast(0.0).check("start duration", self.duration.value, "s")?;
+        Allowed::AtLeast(1.0).check("units that start at once", f64::from(self.at_once), "")
     }
-}
-
-/// Written so that NaN fails.
-pub(super) fn at_least(name: &'static str, value: f64, least: f64, unit: &'static str) -> Result<(), Error> {
-    if value >= least && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit, allowed: Allowed::AtLeast(least) })
 }
 
 calculations! {
