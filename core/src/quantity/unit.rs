@@ -269,11 +269,12 @@ mod tests {
 
     #[test]
     fn factors_agree_with_uom() {
+        use uom::si::angle::degree as deg;
         use uom::si::{
-            angle::*, area::*, capacitance::*, electric_charge::*, electric_current::*,
-            electric_potential::*, electrical_resistance::*, electrical_resistivity::*, energy::*,
-            heat_flux_density::*, length::*, power::*, radiant_exposure::*, ratio::*,
-            temperature_coefficient::*, time::*, volume::*, volume_rate::*,
+            area::*, capacitance::*, electric_charge::*, electric_current::*, electric_potential::*,
+            electrical_resistance::*, electrical_resistivity::*, energy::*, heat_flux_density::*, length::*,
+            power::*, radiant_exposure::*, ratio::*, temperature_coefficient::*, time::*, volume::*,
+            volume_rate::*,
         };
         use uom::si::{f64::ThermodynamicTemperature, thermodynamic_temperature as tt};
         macro_rules! check {
@@ -298,7 +299,7 @@ mod tests {
             "mΩ" Resistance ElectricalResistance milliohm; "µΩ" Resistance ElectricalResistance microohm;
             "Ω·mm²/m" Resistivity ElectricalResistivity ohm_square_millimeter_per_meter;
             "h" Time Time hour; "min" Time Time minute; "d" Time Time day; "%" Ratio Ratio percent;
-            "°" Angle Angle degree; "W/m²" Irradiance HeatFluxDensity watt_per_square_meter;
+            "°" Angle Angle deg;"W/m²" Irradiance HeatFluxDensity watt_per_square_meter;
             "Wh/m²" Irradiation RadiantExposure watt_hour_per_square_meter;
             "/K" RatioPerTemperature TemperatureCoefficient per_kelvin;
             "m³/h" VolumeFlow VolumeRate cubic_meter_per_hour; "L" Volume Volume liter; "µF" Capacitance Capacitance microfarad;

@@ -12,6 +12,7 @@ mod craft_us;
 mod iec;
 mod overrides;
 mod practice;
+mod pv;
 mod query;
 mod surroundings;
 mod table;
@@ -28,6 +29,7 @@ pub use book::{
 };
 pub use overrides::{Overridden, Overrides, OwnValue};
 pub use practice::{PracticeFigure, practice_figure};
+pub use pv::{ColdRow, ColdTable, PvRule};
 pub use query::{
     Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
     LoadUse, Space, Terms,

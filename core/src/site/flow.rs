@@ -11,9 +11,10 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::fault::Fault;
 use super::graph::{Graph, Item, Tree, path_to};
-use super::model::{BankEntry, LoadKind, Return, Site};
+use super::model::{LoadKind, Return};
 use super::plan::sources;
 use super::state::{Solver, State};
+use super::system::{BankEntry, Site};
 use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
 use crate::network::Source;
@@ -62,6 +63,10 @@ pub(super) struct Flow {
     pub ohms_before: f64,
     /// What stands at its end, seen from the source.
     pub end: Option<Item>,
+    /// It is its sources, not its loads, that drive the design current.
+    pub charged: bool,
+    /// Greatest current of a source that limits itself, where the circuit leaves one, A.
+    pub limit: Option<f64>,
 }
 
 /// Conductors, positive and negative, and joints of a circuit.
@@ -159,6 +164,10 @@ impl Flows {
                 flow.low_current = flow.low_current.map(|low| low.max(stated));
             }
         }
+        for tree in trees {
+            flows.take_chargers(site, tree);
+            flows.take_limits(site, tree);
+        }
         flows
     }
 
@@ -197,7 +206,11 @@ impl Flows {
                 }
                 // A feeder of boards is held to the stricter limit of panel feeders (R17).
                 Item::Board(_) => flow.usage = LoadUse::Critical,
-                Item::Bank(_) => {}
+                Item::ConverterInput(i) => {
+                    flow.least_voltage =
+                        site.converters.get(i).and_then(|c| c.least).map(|v| v.get::<volt>());
+                }
+                Item::Bank(_) | Item::Charger(_) | Item::ControllerInput(_) => {}
             }
         }
     }
@@ -347,6 +360,8 @@ const fn none() -> Flow {
         started: None,
         ohms_before: 0.0,
         end: None,
+        charged: false,
+        limit: None,
     }
 }
 

@@ -11,7 +11,8 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 
 use super::graph::{Item, Node, Tree};
-use super::model::{LoadKind, Site};
+use super::model::LoadKind;
+use super::system::Site;
 use crate::error::Error;
 use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power};
@@ -56,7 +57,12 @@ fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
             .inverters
             .get(i)
             .map_or(0.0, |inverter| inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>()),
-        Item::Bank(_) | Item::Board(_) => 0.0,
+        // It draws most while it gives all it may.
+        Item::ConverterInput(i) => site.converters.get(i).map_or(0.0, |c| {
+            let idle = c.idle.map_or(0.0, |p| p.get::<watt>());
+            (c.output * c.limit).get::<watt>() / c.efficiency.get::<ratio>() + idle
+        }),
+        Item::Bank(_) | Item::Board(_) | Item::Charger(_) | Item::ControllerInput(_) => 0.0,
     }
 }
 
@@ -154,7 +160,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 let inverter = self.site.inverters.get(i)?;
                 load.power = inverter.surge? / inverter.efficiency;
             }
-            Item::Bank(_) | Item::Board(_) => return None,
+            _ => return None,
         }
         if let Some(&amps) = self.drawn.get(&node.item) {
             load.current += ElectricCurrent::new::<ampere>(amps);
@@ -216,7 +222,7 @@ fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
             let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
             Some((surge - amps).max(0.0))
         }
-        Item::Bank(_) | Item::Board(_) => None,
+        _ => None,
     }
 }
 
@@ -231,8 +237,8 @@ fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
                 let count = site.loads.get(i).map_or(1, |l| l.count.max(1));
                 state.current.get::<ampere>() / f64::from(count)
             }
-            Item::Inverter(_) => state.current.get::<ampere>(),
-            Item::Bank(_) | Item::Board(_) => 0.0,
+            Item::Inverter(_) | Item::ConverterInput(_) => state.current.get::<ampere>(),
+            _ => 0.0,
         })
         .collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
@@ -278,7 +284,7 @@ fn continuous_currents(
                 Item::Load(i) if site.loads.get(i).is_some_and(|l| l.continuous) => {
                     state.current.get::<ampere>()
                 }
-                Item::Inverter(_) => state.current.get::<ampere>(),
+                Item::Inverter(_) | Item::ConverterInput(_) => state.current.get::<ampere>(),
                 _ => 0.0,
             };
             own + drawn.get(&node.item).copied().unwrap_or(0.0)

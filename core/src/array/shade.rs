@@ -1,0 +1,108 @@
+//! What shade on a part of an array costs, wired in series and wired in parallel: a stated effect, not a measured one.
+//!
+//! Two groups of modules, one in full light and one in less, each with its own current-voltage curve, are joined
+//! numerically. In series each shaded group has a bypass diode; in parallel there is none in the way.
+
+use uom::si::{electric_potential::volt, power::watt, ratio::ratio};
+
+use super::curve::ModuleCurve;
+use super::diode::SingleDiode;
+use super::module::{Conditions, checked};
+use crate::error::{Allowed, Error};
+use crate::quantity::{ElectricPotential, Power, Ratio};
+
+/// Points of a scan, and steps that narrow the best of them.
+const SCAN: u32 = 256;
+const NARROW: u32 = 80;
+
+/// Shade on a part of an array.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ShadeCase {
+    /// Light on the rest, and temperature of all cells.
+    pub conditions: Conditions,
+    /// Part of the module groups that are shaded, 0 … 1; a group is what one bypass diode spans.
+    pub shaded_part: Ratio,
+    /// Light that is left on them, as a part of the rest's, 0 … 1.
+    pub light_left: Ratio,
+    /// Forward voltage of the bypass diodes of one module together, 0 … 5 V.
+    pub bypass_drop: ElectricPotential,
+    /// Modules.
+    pub modules: u16,
+}
+
+/// Power of an array partly in shade.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Shaded {
+    /// Without any shade.
+    pub unshaded: Power,
+    /// If every module could give its own maximum: what the light that is left is worth.
+    pub available: Power,
+    /// All in series, held at its highest peak.
+    pub series: Power,
+    /// All in parallel, held at its highest peak.
+    pub parallel: Power,
+}
+
+/// Power of an array partly in shade, in series and in parallel.
+///
+/// # Errors
+/// [`Error::OutOfRange`] for a case outside its ranges.
+pub fn shade(curve: &ModuleCurve, case: &ShadeCase) -> Result<Shaded, Error> {
+    let part = case.shaded_part.get::<ratio>();
+    let left = case.light_left.get::<ratio>();
+    let bypass = case.bypass_drop.get::<volt>();
+    checked("shaded_part", part, "", Allowed::Between(0.0, 1.0))?;
+    checked("light_left", left, "", Allowed::Between(0.0, 1.0))?;
+    checked("bypass_drop", bypass, "V", Allowed::Between(0.0, 5.0))?;
+    checked("modules", f64::from(case.modules), "", Allowed::AtLeast(1.0))?;
+    let lit = curve.at(&case.conditions)?;
+    let dim = curve.at(&Conditions { irradiance: case.conditions.irradiance * left, ..case.conditions })?;
+    let whole = f64::from(case.modules);
+    let most = |one: &SingleDiode| one.key_points().power().get::<watt>();
+    let w = |one: f64| Power::new::<watt>(one * whole);
+    let available = (1.0 - part) * most(&lit) + part * most(&dim);
+    Ok(Shaded {
+        unshaded: w(most(&lit)),
+        available: w(available),
+        series: w(in_series(&lit, &dim, part, bypass).min(available)),
+        parallel: w(in_parallel(&lit, &dim, part).min(available)),
+    })
+}
+
+/// Greatest power of one module's worth of groups in series: voltages add at one current.
+fn in_series(lit: &SingleDiode, dim: &SingleDiode, part: f64, bypass: f64) -> f64 {
+    let power = |amps: f64| {
+        let bright = lit.voltage_at(amps).unwrap_or(-bypass).max(-bypass);
+        let dark = dim.voltage_at(amps).unwrap_or(-bypass).max(-bypass);
+        amps * ((1.0 - part) * bright + part * dark)
+    };
+    // Two peaks: one below the shaded groups' short-circuit current, one between the two.
+    let (low, high) = (dim.current_at(0.0), lit.current_at(0.0));
+    peak(power, 0.0, low).max(peak(power, low, high)).max(0.0)
+}
+
+/// Greatest power of one module's worth of groups in parallel: currents add at one voltage.
+fn in_parallel(lit: &SingleDiode, dim: &SingleDiode, part: f64) -> f64 {
+    let power = |volts: f64| volts * ((1.0 - part) * lit.current_at(volts) + part * dim.current_at(volts));
+    let most = lit.open_circuit_voltage().get::<volt>();
+    peak(power, 0.0, most).max(0.0)
+}
+
+/// Greatest value on a span: a scan, and the best point narrowed by thirds.
+fn peak(power: impl Fn(f64) -> f64, from: f64, upto: f64) -> f64 {
+    let step = (upto - from) / f64::from(SCAN);
+    let mut best = (from, power(from));
+    for i in 1..=SCAN {
+        let at = from + step * f64::from(i);
+        let here = power(at);
+        if here > best.1 {
+            best = (at, here);
+        }
+    }
+    let (mut low, mut high) = ((best.0 - step).max(from), (best.0 + step).min(upto));
+    for _ in 0..NARROW {
+        let third = (high - low) / 3.0;
+        if power(low + third) < power(high - third) { low += third } else { high -= third }
+    }
+    best.1.max(power(0.5 * (low + high)))
+}

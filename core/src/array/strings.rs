@@ -1,0 +1,615 @@
+//! Strings of modules against a controller, a bank and the rules: voltages cold and hot, currents, devices (R10).
+
+use arrayvec::ArrayVec;
+use uom::si::{
+    electric_current::ampere, electric_potential::volt, power::watt, ratio::ratio,
+    thermodynamic_temperature::degree_celsius,
+};
+
+use super::check::{Cited, PvCheck, PvOutcome, PvRelation, PvSubject};
+use super::layout::Layout;
+use super::module::{Module, PRACTICE, SHEET, checked};
+use super::{
+    array_current_design, open_circuit_voltage_cold, operating_voltage_hot, string_fault_current,
+    string_fuse_least,
+};
+use crate::citation::{Citation, Seen};
+use crate::error::{Allowed, Error};
+use crate::quantity::{ElectricCurrent, ElectricPotential, Ratio, ThermodynamicTemperature};
+
+/// The most checks that one arrangement gives.
+const CHECKS: usize = 24;
+/// The most further parts that a cold voltage is held against.
+const PARTS: usize = 8;
+
+const RULE: Citation = Citation::new("design rule", "R10", Seen::Practice);
+
+/// How a controller holds its array.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Regulation {
+    /// Clamped to the bank's voltage: pulse-width modulation.
+    Clamped,
+    /// Held at maximum power.
+    Tracking,
+}
+
+/// What the controller's input and output bear, as its sheet states it.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct InputLimits {
+    /// How it holds the array.
+    pub regulation: Regulation,
+    /// Greatest input voltage.
+    pub greatest_voltage: Option<ElectricPotential>,
+    /// Lower end of the operating window.
+    pub window_low: Option<ElectricPotential>,
+    /// Upper end of the operating window.
+    pub window_high: Option<ElectricPotential>,
+    /// How far the array must stand above the bank to start.
+    pub start_margin: Option<ElectricPotential>,
+    /// Greatest short-circuit current of the array.
+    pub short_circuit_current: Option<ElectricCurrent>,
+    /// Greatest operating current at the input.
+    pub input_current: Option<ElectricCurrent>,
+    /// Greatest current into the bank.
+    pub output_current: Option<ElectricCurrent>,
+}
+
+/// The factors and limits of a rule set that count here.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct PvFactors {
+    /// For light brighter than the standard 1000 W/m².
+    pub irradiance: Cited,
+    /// For current that flows for hours.
+    pub continuous: Cited,
+    /// Least rating of a string's device over Isc.
+    pub device_least: Option<Cited>,
+    /// Greatest rating of a string's device over Isc.
+    pub device_most: Option<Cited>,
+    /// Greatest voltage of an array, V.
+    pub greatest_voltage: Option<Cited>,
+}
+
+/// A further part that bears the array's cold voltage.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct VoltagePart {
+    /// What is compared, in words: `cold open-circuit voltage against the isolator`.
+    pub what: &'static str,
+    /// Its greatest DC voltage, if stated.
+    pub greatest: Option<ElectricPotential>,
+}
+
+/// The overcurrent device of each string.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum StringDevice {
+    /// There is none.
+    Absent,
+    /// There is one of this rating.
+    Rated(ElectricCurrent),
+    /// One is chosen later, where it is required.
+    ToChoose,
+}
+
+/// Everything that strings are held against.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct StringQuestion<'a> {
+    /// The module.
+    pub module: &'a Module,
+    /// The controller's limits.
+    pub input: InputLimits,
+    /// Coldest air at first light.
+    pub coldest: ThermodynamicTemperature,
+    /// Hottest cells: ambient and NOCT through [`cell_temperature()`](super::cell_temperature()).
+    pub hottest_cell: ThermodynamicTemperature,
+    /// Factor of the rule set for the coldest morning, for a module without a coefficient.
+    pub cold_factor: Option<Cited>,
+    /// Nominal voltage of the bank.
+    pub bank_nominal: ElectricPotential,
+    /// Highest charge voltage of the bank, absorption or equalising, compensated for cold.
+    pub bank_highest: ElectricPotential,
+    /// Part of the voltage lost in the array's wiring.
+    pub drop: Ratio,
+    /// Part of the voltage lost over the years.
+    pub ageing: Ratio,
+    /// Factors of the rule set.
+    pub factors: PvFactors,
+    /// Device in each string.
+    pub device: StringDevice,
+    /// Ampacity of a string's conductor.
+    pub ampacity: Option<ElectricCurrent>,
+    /// What the bank drives back through the controller; 0 where that blocks.
+    pub back_feed: Option<ElectricCurrent>,
+    /// Further parts that bear the cold voltage; at most 8.
+    pub parts: &'a [VoltagePart],
+}
+
+/// How a cold voltage was found.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum ColdBasis {
+    /// The sheet's coefficient.
+    Coefficient,
+    /// The rule set's factor.
+    Factor(Cited),
+}
+
+/// Voltages of a string of so many modules.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct StringVoltages {
+    /// Open circuit on the coldest morning, and how it was found; `None` without coefficient and factor.
+    pub cold_voc: Option<(ElectricPotential, ColdBasis)>,
+    /// Maximum power on the coldest morning; `None` without a coefficient.
+    pub cold_vmp: Option<ElectricPotential>,
+    /// Maximum power with hottest cells, after wiring and ageing; `None` without a coefficient.
+    pub hot_vmp: Option<ElectricPotential>,
+}
+
+/// Currents of an arrangement for which conductors and devices are chosen.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ArrayCurrents {
+    /// Of one string: what the sun can drive.
+    pub string_greatest: ElectricCurrent,
+    /// Of one string: for which its conductor is chosen.
+    pub string_design: ElectricCurrent,
+    /// Of the array: what the sun can drive.
+    pub array_greatest: ElectricCurrent,
+    /// Of the array: for which its conductor is chosen.
+    pub array_design: ElectricCurrent,
+    /// What the others drive into a faulty string, without the bank.
+    pub fault: ElectricCurrent,
+    /// Least rating of a string's device, if the rule set has a factor.
+    pub device_least: Option<ElectricCurrent>,
+    /// Greatest rating of a string's device: the rule set's factor and the module's series-fuse rating, the lower.
+    pub device_most: Option<ElectricCurrent>,
+}
+
+/// One arrangement with its voltages, currents and checks.
+#[derive(Clone, Debug, PartialEq)]
+pub struct StringsChecked {
+    /// The arrangement.
+    pub layout: Layout,
+    /// Of a string.
+    pub voltages: StringVoltages,
+    /// Of a string and of the array.
+    pub currents: ArrayCurrents,
+    /// Whether each string needs a device of its own; `None` where data are missing.
+    pub device_required: Option<bool>,
+    /// The checks, in a fixed order.
+    pub checks: ArrayVec<PvCheck, CHECKS>,
+}
+
+impl StringsChecked {
+    /// The first check that speaks against the arrangement.
+    pub fn obstacle(&self) -> Option<&PvCheck> {
+        self.checks.iter().find(|check| check.is_obstacle())
+    }
+
+    /// The checks that were not made for want of a datum.
+    pub fn not_made(&self) -> impl Iterator<Item = &PvCheck> {
+        self.checks.iter().filter(|check| check.outcome == PvOutcome::NotChecked)
+    }
+}
+
+impl StringQuestion<'_> {
+    fn check(&self) -> Result<(), Error> {
+        for (name, temperature, most) in
+            [("coldest", self.coldest, 40.0), ("hottest_cell", self.hottest_cell, 150.0)]
+        {
+            checked(name, temperature.get::<degree_celsius>(), "degC", Allowed::Between(-60.0, most))?;
+        }
+        for (name, part) in [("drop", self.drop), ("ageing", self.ageing)] {
+            checked(name, part.get::<ratio>(), "", Allowed::Between(0.0, 0.5))?;
+        }
+        for (name, voltage) in [("bank_nominal", self.bank_nominal), ("bank_highest", self.bank_highest)] {
+            checked(name, voltage.get::<volt>(), "V", Allowed::AboveUpTo(0.0, 2000.0))?;
+        }
+        let input = &self.input;
+        for (name, voltage) in [
+            ("greatest input voltage", input.greatest_voltage),
+            ("window_low", input.window_low),
+            ("window_high", input.window_high),
+            ("start_margin", input.start_margin),
+        ] {
+            if let Some(voltage) = voltage {
+                checked(name, voltage.get::<volt>(), "V", Allowed::Between(0.0, 3000.0))?;
+            }
+        }
+        let device = match self.device {
+            StringDevice::Rated(rating) => Some(rating),
+            StringDevice::Absent | StringDevice::ToChoose => None,
+        };
+        for (name, current) in [
+            ("short_circuit_current", input.short_circuit_current),
+            ("input_current", input.input_current),
+            ("output_current", input.output_current),
+            ("ampacity", self.ampacity),
+            ("back_feed", self.back_feed),
+            ("string device", device),
+        ] {
+            if let Some(current) = current {
+                checked(name, current.get::<ampere>(), "A", Allowed::Between(0.0, 1e5))?;
+            }
+        }
+        for part in self.parts {
+            if let Some(voltage) = part.greatest {
+                checked(
+                    "greatest voltage of a part",
+                    voltage.get::<volt>(),
+                    "V",
+                    Allowed::Between(0.0, 1e5),
+                )?;
+            }
+        }
+        let factors = &self.factors;
+        for (name, factor) in [
+            ("irradiance factor", Some(factors.irradiance)),
+            ("continuous factor", Some(factors.continuous)),
+            ("device_least", factors.device_least),
+            ("device_most", factors.device_most),
+            ("cold_factor", self.cold_factor),
+        ] {
+            if let Some(factor) = factor {
+                checked(name, factor.value, "", Allowed::Between(1.0, 4.0))?;
+            }
+        }
+        if let Some(most) = factors.greatest_voltage {
+            checked("greatest voltage of the rule set", most.value, "V", Allowed::AboveUpTo(0.0, 1e4))?;
+        }
+        if self.parts.len() > PARTS {
+            return Err(Error::WrongCount { what: "voltage parts", given: self.parts.len(), needed: PARTS });
+        }
+        Ok(())
+    }
+}
+
+/// Voltages of a string of so many modules, cold and hot.
+///
+/// # Errors
+/// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges.
+pub fn string_voltages(question: &StringQuestion<'_>, in_series: u16) -> Result<StringVoltages, Error> {
+    question.check()?;
+    let sheet = question.module.sheet();
+    let count = Ratio::new::<ratio>(f64::from(in_series));
+    let cold_voc = match (sheet.voc_coefficient, question.cold_factor) {
+        (Some(coefficient), _) => {
+            let voltage = open_circuit_voltage_cold(sheet.points.voc, coefficient, question.coldest, count)?;
+            Some((voltage, ColdBasis::Coefficient))
+        }
+        (None, Some(factor)) => {
+            checked("modules in series", count.value, "", Allowed::Between(1.0, 1000.0))?;
+            Some((sheet.points.voc * count * factor.value, ColdBasis::Factor(factor)))
+        }
+        (None, None) => None,
+    };
+    let zero = Ratio::new::<ratio>(0.0);
+    let at = |temperature, drop, ageing| {
+        question.module.vmp_coefficient().map(|coefficient| {
+            operating_voltage_hot(sheet.points.vmp, coefficient, temperature, count, drop, ageing)
+        })
+    };
+    Ok(StringVoltages {
+        cold_voc,
+        cold_vmp: at(question.coldest, zero, zero).transpose()?,
+        hot_vmp: at(question.hottest_cell, question.drop, question.ageing).transpose()?,
+    })
+}
+
+/// Currents of so many strings in parallel.
+///
+/// # Errors
+/// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges.
+pub fn array_currents(question: &StringQuestion<'_>, in_parallel: u16) -> Result<ArrayCurrents, Error> {
+    question.check()?;
+    let sheet = question.module.sheet();
+    let r = Ratio::new::<ratio>;
+    let (isc, gain) = (sheet.points.isc, sheet.bifacial_gain);
+    let irradiance = r(question.factors.irradiance.value);
+    let design = |strings: f64| {
+        array_current_design(isc, r(strings), gain, irradiance, r(question.factors.continuous.value))
+    };
+    let (string, array) = (design(1.0)?, design(f64::from(in_parallel))?);
+    let of_isc = |factor: Option<Cited>| factor.map(|f| isc * question.module.rear_factor() * f.value);
+    let device_least = match question.factors.device_least {
+        Some(factor) => Some(string_fuse_least(isc, gain, r(factor.value))?),
+        None => None,
+    };
+    let device_most = match (of_isc(question.factors.device_most), sheet.series_fuse) {
+        (Some(a), Some(b)) => Some(if b < a { b } else { a }),
+        (a, b) => a.or(b),
+    };
+    Ok(ArrayCurrents {
+        string_greatest: string.greatest,
+        string_design: string.design,
+        array_greatest: array.greatest,
+        array_design: array.design,
+        fault: string_fault_current(
+            isc,
+            r(f64::from(in_parallel)),
+            gain,
+            irradiance,
+            ElectricCurrent::new::<ampere>(0.0),
+        )?,
+        device_least,
+        device_most,
+    })
+}
+
+/// Holds an arrangement against controller, bank, module and rules.
+///
+/// # Errors
+/// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges, [`Error::WrongCount`] for more than eight
+/// further parts. A check that fails, or lacks a datum, is no error.
+pub fn check_strings(question: &StringQuestion<'_>, layout: Layout) -> Result<StringsChecked, Error> {
+    let voltages = string_voltages(question, layout.in_series)?;
+    let currents = array_currents(question, layout.in_parallel)?;
+    let mut checks = ArrayVec::new();
+    cold(question, &voltages, &mut checks);
+    hot(question, &voltages, &mut checks);
+    input_current(question, layout, &currents, &mut checks);
+    let device_required = string_device(question, &currents, &mut checks);
+    Ok(StringsChecked { layout, voltages, currents, device_required, checks })
+}
+
+type Checks = ArrayVec<PvCheck, CHECKS>;
+
+/// Cold open circuit against every part, cold maximum power against the window's upper end.
+fn cold(question: &StringQuestion<'_>, voltages: &StringVoltages, checks: &mut Checks) {
+    let no_coefficient = "cold open-circuit voltage: neither the module's coefficient nor a factor is stated";
+    let mut against = |subject, limit: Option<ElectricPotential>, what, missing, citation| {
+        checks.push(match (voltages.cold_voc, limit) {
+            (Some((value, _)), Some(limit)) => {
+                let numbers = (value.get::<volt>(), PvRelation::AtMost, limit.get::<volt>());
+                PvCheck::made(subject, numbers, "V", what, citation)
+            }
+            (None, _) => PvCheck::missing(subject, PvRelation::AtMost, "V", no_coefficient, citation),
+            (_, None) => PvCheck::missing(subject, PvRelation::AtMost, "V", missing, citation),
+        });
+    };
+    against(
+        PvSubject::ModuleVoltage,
+        question.module.sheet().system_voltage,
+        "cold open-circuit voltage against the module's greatest system voltage",
+        "cold open-circuit voltage against the module: its greatest system voltage is not stated",
+        SHEET,
+    );
+    against(
+        PvSubject::ControllerVoltage,
+        question.input.greatest_voltage,
+        "cold open-circuit voltage against the controller's greatest input voltage",
+        "cold open-circuit voltage against the controller: its greatest input voltage is not stated",
+        CONTROLLER,
+    );
+    for part in question.parts {
+        against(PvSubject::PartVoltage, part.greatest, part.what, part.what, PART);
+    }
+    if let Some(most) = question.factors.greatest_voltage {
+        let limit = ElectricPotential::new::<volt>(most.value);
+        let what = "cold open-circuit voltage against the greatest that the rule set admits";
+        against(PvSubject::RuleVoltage, Some(limit), what, what, most.citation);
+    }
+    if let Some(high) = question.input.window_high {
+        let subject = PvSubject::WindowHigh;
+        checks.push(
+            match voltages.cold_vmp {
+                Some(value) => PvCheck::made(
+                    subject,
+                    (value.get::<volt>(), PvRelation::AtMost, high.get::<volt>()),
+                    "V",
+                    "cold voltage at maximum power against the upper end of the controller's window",
+                    CONTROLLER,
+                ),
+                None => PvCheck::missing(subject, PvRelation::AtMost, "V", NO_VMP, CONTROLLER),
+            }
+            .yield_only(),
+        );
+    }
+}
+
+/// Hot maximum power against the bank's highest voltage with margin, and the window's lower end.
+fn hot(question: &StringQuestion<'_>, voltages: &StringVoltages, checks: &mut Checks) {
+    let subject = PvSubject::ChargeVoltage;
+    checks.push(match (voltages.hot_vmp, question.input.start_margin) {
+        (Some(value), Some(margin)) => {
+            let least = question.bank_highest + margin;
+            PvCheck::made(
+                subject,
+                (value.get::<volt>(), PvRelation::AtLeast, least.get::<volt>()),
+                "V",
+                "hot voltage at maximum power against the bank's highest charge voltage with the controller's margin",
+                RULE,
+            )
+        }
+        (None, _) => PvCheck::missing(subject, PvRelation::AtLeast, "V", NO_VMP, RULE),
+        (_, None) => {
+            let what = "hot voltage at maximum power: the controller's start margin is not stated";
+            PvCheck::missing(subject, PvRelation::AtLeast, "V", what, RULE)
+        }
+    });
+    if let Some(low) = question.input.window_low {
+        let subject = PvSubject::WindowLow;
+        checks.push(match voltages.hot_vmp {
+            Some(value) => PvCheck::made(
+                subject,
+                (value.get::<volt>(), PvRelation::AtLeast, low.get::<volt>()),
+                "V",
+                "hot voltage at maximum power against the lower end of the controller's window",
+                CONTROLLER,
+            ),
+            None => PvCheck::missing(subject, PvRelation::AtLeast, "V", NO_VMP, CONTROLLER),
+        });
+    }
+}
+
+/// Short circuit, operating current and current into the bank.
+fn input_current(
+    question: &StringQuestion<'_>,
+    layout: Layout,
+    currents: &ArrayCurrents,
+    checks: &mut Checks,
+) {
+    let input = &question.input;
+    let clamped = input.regulation == Regulation::Clamped;
+    let at_most = PvRelation::AtMost;
+    // A clamped array drives its current straight through: then the output's rating is the input's, too.
+    let bears = input.short_circuit_current.or(input.input_current);
+    let bears = if clamped { bears.or(input.output_current) } else { bears };
+    let subject = PvSubject::ShortCircuit;
+    let greatest = currents.array_greatest.get::<ampere>();
+    checks.push(match bears {
+        Some(limit) => PvCheck::made(
+            subject,
+            (greatest, at_most, limit.get::<ampere>()),
+            "A",
+            "short-circuit current with the irradiance factor against the controller's input",
+            CONTROLLER,
+        ),
+        None => {
+            let what =
+                "short-circuit current: neither short-circuit nor input current of the controller is stated";
+            PvCheck::missing(subject, at_most, "A", what, CONTROLLER)
+        }
+    });
+    let sheet = question.module.sheet();
+    let parallel = f64::from(layout.in_parallel) * question.module.rear_factor();
+    let operating = parallel * sheet.points.imp.get::<ampere>();
+    if let Some(limit) = input.input_current {
+        let numbers = (operating, at_most, limit.get::<ampere>());
+        let what = "current at maximum power against the controller's operating current";
+        let check = PvCheck::made(PvSubject::InputCurrent, numbers, "A", what, CONTROLLER);
+        checks.push(if clamped { check } else { check.yield_only() });
+    }
+    let subject = PvSubject::OutputCurrent;
+    let Some(limit) = input.output_current else {
+        let what = "current into the bank: the controller's output current is not stated";
+        checks.push(PvCheck::missing(subject, at_most, "A", what, CONTROLLER));
+        return;
+    };
+    let limit = limit.get::<ampere>();
+    checks.push(if clamped {
+        let what = "short-circuit current with the irradiance factor against the controller's output";
+        PvCheck::made(subject, (greatest, at_most, limit), "A", what, CONTROLLER)
+    } else {
+        let power = sheet.power.get::<watt>() * f64::from(layout.in_series) * parallel;
+        let what = "rated power over the bank's nominal voltage against the controller's output";
+        let numbers = (power / question.bank_nominal.get::<volt>(), at_most, limit);
+        PvCheck::made(subject, numbers, "A", what, CONTROLLER).yield_only()
+    });
+}
+
+/// Whether a string needs a device, and whether the one it has fits.
+fn string_device(
+    question: &StringQuestion<'_>,
+    currents: &ArrayCurrents,
+    checks: &mut Checks,
+) -> Option<bool> {
+    let at_most = PvRelation::AtMost;
+    let fuse = question.module.sheet().series_fuse.map(|i| i.get::<ampere>());
+    let ampacity = question.ampacity.map(|i| i.get::<ampere>());
+    let fault = question.back_feed.map(|back| (currents.fault + back).get::<ampere>());
+    let exceeds = |limit: Option<f64>| match (fault, limit) {
+        (Some(fault), Some(limit)) => Some(fault > limit),
+        _ => None,
+    };
+    // One limit that is exceeded is enough; none is known to be kept while one is unknown.
+    let required = match (exceeds(fuse), exceeds(ampacity)) {
+        (Some(true), _) | (_, Some(true)) => Some(true),
+        (Some(false), Some(false)) => Some(false),
+        _ => None,
+    };
+    let what_fuse =
+        "current of the other strings and the bank into a faulty one against the module's series-fuse rating";
+    let what_ampacity =
+        "current of the other strings and the bank into a faulty one against the string's conductor";
+    match question.device {
+        StringDevice::Absent => {
+            for (subject, limit, what, missing, citation) in [
+                (
+                    PvSubject::StringFault,
+                    fuse,
+                    what_fuse,
+                    "current into a faulty string: the module's series-fuse rating is not stated",
+                    question.factors.irradiance.citation,
+                ),
+                (
+                    PvSubject::ConductorFault,
+                    ampacity,
+                    what_ampacity,
+                    "current into a faulty string: the ampacity of its conductor is not known",
+                    question.factors.irradiance.citation,
+                ),
+            ] {
+                checks.push(match (fault, limit) {
+                    (Some(fault), Some(limit)) => {
+                        PvCheck::made(subject, (fault, at_most, limit), "A", what, citation)
+                    }
+                    (None, _) => {
+                        let what = "current into a faulty string: the controller's back-feed is not stated";
+                        PvCheck::missing(subject, at_most, "A", what, citation)
+                    }
+                    (_, None) => PvCheck::missing(subject, at_most, "A", missing, citation),
+                });
+            }
+        }
+        StringDevice::Rated(rating) => rated(question, currents, rating.get::<ampere>(), checks),
+        StringDevice::ToChoose => {
+            // Where a device is or may be required, its least rating must fit the module.
+            if required != Some(false)
+                && let (Some(least), Some(fuse)) = (currents.device_least, fuse)
+            {
+                let what = "least rating of a string's device against the module's series-fuse rating";
+                let numbers = (least.get::<ampere>(), at_most, fuse);
+                checks.push(PvCheck::made(PvSubject::DeviceModule, numbers, "A", what, SHEET));
+            } else if required != Some(false) {
+                let what = "device of a string: the module's series-fuse rating or the rule set's factor is not stated";
+                checks.push(PvCheck::missing(PvSubject::DeviceModule, at_most, "A", what, SHEET));
+            }
+        }
+    }
+    required
+}
+
+/// The rating of a string's device between its least and its most.
+fn rated(question: &StringQuestion<'_>, currents: &ArrayCurrents, rating: f64, checks: &mut Checks) {
+    let sheet = question.module.sheet();
+    let least = currents.device_least.zip(question.factors.device_least);
+    checks.push(match least {
+        Some((least, factor)) => PvCheck::made(
+            PvSubject::DeviceLeast,
+            (rating, PvRelation::AtLeast, least.get::<ampere>()),
+            "A",
+            "rating of a string's device against its least",
+            factor.citation,
+        ),
+        None => PvCheck::missing(
+            PvSubject::DeviceLeast,
+            PvRelation::AtLeast,
+            "A",
+            "least rating of a string's device: the rule set holds no factor",
+            PRACTICE,
+        ),
+    });
+    if let Some(factor) = question.factors.device_most {
+        let most = sheet.points.isc.get::<ampere>() * question.module.rear_factor() * factor.value;
+        let what = "rating of a string's device against its most";
+        let numbers = (rating, PvRelation::AtMost, most);
+        checks.push(PvCheck::made(PvSubject::DeviceMost, numbers, "A", what, factor.citation));
+    }
+    checks.push(match sheet.series_fuse {
+        Some(fuse) => PvCheck::made(
+            PvSubject::DeviceModule,
+            (rating, PvRelation::AtMost, fuse.get::<ampere>()),
+            "A",
+            "rating of a string's device against the module's series-fuse rating",
+            SHEET,
+        ),
+        None => PvCheck::missing(
+            PvSubject::DeviceModule,
+            PvRelation::AtMost,
+            "A",
+            "rating of a string's device: the module's series-fuse rating is not stated",
+            SHEET,
+        ),
+    });
+}
+
+const CONTROLLER: Citation = Citation::new("the controller's sheet", "", Seen::Stated);
+const PART: Citation = Citation::new("the part's sheet", "", Seen::Stated);
+const NO_VMP: &str = "voltage at maximum power: neither coefficient of power nor of voltage is stated";
