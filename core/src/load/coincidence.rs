@@ -299,3 +299,194 @@ fn found_sets(occasions: &[Occasion], into: &mut [LoadSet]) -> Option<usize> {
     }
     Some(count)
 }
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::collections::BTreeSet;
+    use std::vec::Vec;
+
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::load::{Draw, Load, Schedule, Window};
+
+    /// Every slot of the year.
+    fn slots() -> impl Iterator<Item = Slot> {
+        (1..=12).flat_map(|month| (0..48).map(move |half_hour| Slot { month, half_hour }))
+    }
+
+    fn sets_of(occasions: &[Occasion]) -> BTreeSet<u128> {
+        slots()
+            .map(|slot| {
+                (0..occasions.len())
+                    .filter(|&i| occasions[i].contains(slot))
+                    .fold(0, |set, i| set | 1u128 << i)
+            })
+            .collect()
+    }
+
+    /// A few windows and months, so that loads meet often enough.
+    fn any_occasion() -> impl Strategy<Value = Occasion> {
+        (0..48u8, 1..49u8, 0..4096u16).prop_map(|(from, length, months)| {
+            let half_hours = (0..length).fold(0u64, |set, k| set | 1 << ((from + k) % 48));
+            Occasion::new(half_hours, Months::from_bits(months))
+        })
+    }
+
+    fn w(watts: f64) -> Power {
+        Power::new::<watt>(watts)
+    }
+
+    proptest! {
+        #[test]
+        fn the_sum_is_the_greatest_of_all_slots(
+            loads in proptest::collection::vec((any_occasion(), 0..1000u32, 0..3000u32), 0..10),
+        ) {
+            let occasions: Vec<_> = loads.iter().map(|load| load.0).collect();
+            let running: Vec<_> = loads.iter().map(|load| w(f64::from(load.1))).collect();
+            let extra: Vec<_> = loads.iter().map(|load| w(f64::from(load.2))).collect();
+            let ours = coincident_power(&occasions, &running, &extra).unwrap();
+            let (mut sum, mut with_start) = (0, 0);
+            for slot in slots() {
+                let active: Vec<_> = loads.iter().filter(|load| load.0.contains(slot)).collect();
+                let here: u32 = active.iter().map(|load| load.1).sum();
+                sum = sum.max(here);
+                with_start = with_start.max(here + active.iter().map(|load| load.2).max().unwrap_or(0));
+            }
+            prop_assert_eq!(ours.running, w(f64::from(sum)));
+            prop_assert_eq!(ours.with_start.sum, w(f64::from(with_start)));
+            // The slot told is one in which that happens.
+            if let Some(slot) = ours.slot {
+                let here: u32 = loads.iter().filter(|load| load.0.contains(slot)).map(|load| load.1).sum();
+                prop_assert_eq!(here, sum);
+            } else {
+                prop_assert!(occasions.iter().all(Occasion::is_never));
+            }
+            if let (Some(slot), Some(i)) = (ours.with_start.slot, ours.with_start.starting) {
+                prop_assert!(occasions[i].contains(slot));
+            }
+            // Amperes as watts.
+            let amperes: Vec<_> = running.iter().map(|p| ElectricCurrent::new::<ampere>(p.value)).collect();
+            let none = std::vec![ElectricCurrent::new::<ampere>(0.0); loads.len()];
+            let current = coincident_current(&occasions, &amperes, &none).unwrap();
+            prop_assert_eq!(current.running.value, ours.running.value);
+            prop_assert_eq!(current.with_start.starting, None);
+        }
+
+        #[test]
+        fn the_sets_are_the_maximal_ones_of_all_slots(
+            occasions in proptest::collection::vec(any_occasion(), 0..12),
+        ) {
+            let all = sets_of(&occasions);
+            let maximal: BTreeSet<_> = all
+                .iter()
+                .copied()
+                .filter(|&set| set != 0 && !all.iter().any(|&other| other != set && set & !other == 0))
+                .collect();
+            let mut sets = [LoadSet::default(); MAXIMAL_SETS];
+            let MaximalSets::Exact(count) = maximal_sets(&occasions, &mut sets) else {
+                return Err(TestCaseError::fail("never too many"));
+            };
+            let ours: Vec<_> = sets[..count].iter().map(|set| set.0).collect();
+            prop_assert_eq!(ours.iter().copied().collect::<BTreeSet<_>>(), maximal);
+            prop_assert_eq!(ours.len(), count);
+            // With exactly one place too few it falls back, to all.
+            if count > 0 {
+                let mut short = std::vec![LoadSet::default(); count - 1];
+                prop_assert_eq!(maximal_sets(&occasions, &mut short), MaximalSets::AllAtOnce);
+                prop_assert!(short.first().is_none_or(|&set| set == LoadSet::ALL));
+            }
+        }
+
+        /// Windows to the minute, minute by minute: what meets in one minute meets in one half-hour.
+        #[test]
+        fn no_minute_of_any_month_exceeds_the_sum(
+            loads in proptest::collection::vec((0..1440u16, 0..1440u16, 0..4096u16, 1..500u32), 1..6),
+            aligned in any::<bool>(),
+        ) {
+            let round = |minute: u16| if aligned { minute / 30 * 30 } else { minute };
+            let loads: Vec<_> = loads
+                .into_iter()
+                .map(|(from, to, months, watts)| (round(from), round(to), months, watts))
+                .filter(|(from, to, ..)| from != to)
+                .collect();
+            let occasions: Vec<_> = loads
+                .iter()
+                .map(|&(from, to, months, _)| {
+                    let window = Window::minutes(from, to).unwrap();
+                    let schedule = Schedule::windows(&[window]).unwrap().in_months(Months::from_bits(months));
+                    Load { schedule, ..Load::new(Draw::Power(w(1.0))) }.occasion(None).unwrap()
+                })
+                .collect();
+            let running: Vec<_> = loads.iter().map(|load| w(f64::from(load.3))).collect();
+            let none = std::vec![w(0.0); loads.len()];
+            let ours = coincident_power(&occasions, &running, &none).unwrap().running.value;
+            let mut most = 0;
+            for month in 0..12u16 {
+                for minute in 0..1440u16 {
+                    let on = |&&(from, to, months, _): &&(u16, u16, u16, u32)| {
+                        months >> month & 1 == 1
+                            && if from < to { (from..to).contains(&minute) } else { minute >= from || minute < to }
+                    };
+                    most = most.max(loads.iter().filter(on).map(|load| load.3).sum::<u32>());
+                }
+            }
+            if aligned {
+                prop_assert_eq!(ours, f64::from(most));
+            } else {
+                prop_assert!(ours >= f64::from(most));
+            }
+        }
+    }
+
+    #[test]
+    fn no_minute_is_lost_at_midnight_and_new_year() {
+        let night = Occasion::new(1 << 47 | 1, Months::of(&[12, 1]).unwrap());
+        let eve = Occasion::new(1 << 47, Months::of(&[12]).unwrap());
+        let mut sets = [LoadSet::default(); 4];
+        assert_eq!(maximal_sets(&[night, eve], &mut sets), MaximalSets::Exact(1));
+        assert_eq!(sets[0].count(), 2);
+        let most = coincident_power(&[night, eve], &[w(1.0), w(2.0)], &[w(0.0), w(0.0)]).unwrap();
+        assert_eq!((most.running, most.slot), (w(3.0), Some(Slot { month: 12, half_hour: 47 })));
+    }
+
+    #[test]
+    fn the_largest_start_need_not_meet_the_greatest_sum() {
+        let (morning, evening) = (Occasion::new(1 << 14, Months::ALL), Occasion::new(1 << 40, Months::ALL));
+        let most =
+            coincident_power(&[morning, evening], &[w(1000.0), w(200.0)], &[w(0.0), w(1000.0)]).unwrap();
+        assert_eq!((most.running, most.slot.unwrap().half_hour), (w(1000.0), 14));
+        assert_eq!((most.with_start.sum, most.with_start.slot.unwrap().half_hour), (w(1200.0), 40));
+    }
+
+    #[test]
+    fn more_loads_than_a_set_holds_are_taken_all_at_once() {
+        let mut sets = [LoadSet::default(); 2];
+        assert_eq!(maximal_sets(&[Occasion::ALWAYS; 128], &mut sets), MaximalSets::Exact(1));
+        assert_eq!((sets[0], LoadSet::ALL.places().count()), (LoadSet::ALL, 128));
+        assert_eq!(maximal_sets(&[Occasion::ALWAYS; 129], &mut sets), MaximalSets::AllAtOnce);
+        assert!(!LoadSet::ALL.contains(128));
+        // Without a place nothing is written, and the answer is the same.
+        assert_eq!(maximal_sets(&[Occasion::ALWAYS], &mut []), MaximalSets::AllAtOnce);
+        // Nothing ever runs: no set, and a place is not needed.
+        assert_eq!(maximal_sets(&[Occasion::new(0, Months::ALL)], &mut []), MaximalSets::Exact(0));
+    }
+
+    #[test]
+    fn lists_of_different_length_and_figures_out_of_range_are_errors() {
+        let one = [Occasion::ALWAYS];
+        assert!(matches!(coincident_power(&one, &[], &[w(0.0)]), Err(Error::WrongCount { .. })));
+        assert!(matches!(coincident_power(&one, &[w(0.0)], &[]), Err(Error::WrongCount { .. })));
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -1.0] {
+            assert!(coincident_power(&one, &[w(bad)], &[w(0.0)]).is_err(), "{bad}");
+            assert!(coincident_power(&one, &[w(0.0)], &[w(bad)]).is_err(), "{bad}");
+        }
+        let huge = [w(f64::MAX), w(f64::MAX)];
+        assert!(coincident_power(&[Occasion::ALWAYS; 2], &huge, &[w(0.0); 2]).is_err());
+        let nothing = coincident_power(&[], &[], &[]).unwrap();
+        assert_eq!((nothing.running, nothing.slot), (w(0.0), None));
+        assert!(!Occasion::ALWAYS.contains(Slot { month: 0, half_hour: 0 }));
+        assert!(!Occasion::ALWAYS.contains(Slot { month: 1, half_hour: 255 }));
+    }
+}

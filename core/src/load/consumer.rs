@@ -182,9 +182,10 @@ impl Load {
     /// # Errors
     /// As [`Load::power_at`].
     pub fn current_at(&self, voltage: ElectricPotential) -> Result<Option<ElectricCurrent>, Error> {
-        let power = self.power_at(voltage)?;
+        let current = self.power_at(voltage)? / voltage;
+        Allowed::AtLeast(0.0).check("current", current.get::<ampere>(), "A")?;
         Ok(match self.terminals {
-            Terminals::Dc => Some(power / voltage),
+            Terminals::Dc => Some(current),
             Terminals::Ac { .. } => None,
         })
     }
@@ -195,10 +196,12 @@ impl Load {
     /// As [`Load::power_at`].
     pub fn apparent_at(&self, voltage: ElectricPotential) -> Result<Power, Error> {
         let power = self.power_at(voltage)?;
-        Ok(match self.terminals {
+        let apparent = match self.terminals {
             Terminals::Dc => power,
             Terminals::Ac { power_factor } => power / power_factor,
-        })
+        };
+        Allowed::AtLeast(0.0).check("apparent power", apparent.value, "W")?;
+        Ok(apparent)
     }
 
     /// What a start adds to the running current, in parts of the running current of all of them; 0 without a start.
@@ -285,5 +288,140 @@ impl Load {
             }
         }
         Ok(())
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use uom::si::energy::watt_hour;
+    use uom::si::power::watt;
+    use uom::si::ratio::ratio;
+
+    use super::*;
+    use crate::load::{Months, Slot};
+    use crate::quantity::{Textual, parse};
+
+    fn q<Q: Textual>(text: &str) -> Q {
+        parse(text).unwrap()
+    }
+
+    fn lamp() -> Load {
+        Load { count: 3, ..Load::new(Draw::Power(q("10 W"))) }
+    }
+
+    #[test]
+    fn kinds_part_where_the_voltage_does() {
+        let draws = [
+            Draw::Power(q("48 W")),
+            Draw::Current(q("2 A")),
+            Draw::Resistive { power: q("48 W"), at: q("24 V") },
+        ];
+        let watts = |volts: f64| {
+            let voltage = ElectricPotential::new::<volt>(volts);
+            draws.map(|draw| draw.power_at(voltage).unwrap().value)
+        };
+        assert_eq!(watts(24.0), [48.0, 48.0, 48.0]);
+        assert_eq!(watts(12.0), [48.0, 24.0, 12.0]);
+        let amperes = draws.map(|draw| draw.current_at(q("12 V")).unwrap().value);
+        assert_eq!(amperes, [4.0, 2.0, 1.0]);
+    }
+
+    #[test]
+    fn a_resistive_load_behind_an_inverter_does_not_see_the_bank() {
+        let heater = Load {
+            terminals: Terminals::Ac { power_factor: q("1") },
+            ..Load::new(Draw::Resistive { power: q("500 W"), at: q("230 V") })
+        };
+        assert_eq!(heater.power_at(q("21 V")), Ok(q("500 W")));
+        assert_eq!(heater.current_at(q("21 V")), Ok(None));
+    }
+
+    #[test]
+    fn an_energy_is_power_by_hours_by_duty_by_days() {
+        let load = Load {
+            schedule: Schedule::windows(&["22:00-02:00".parse().unwrap()])
+                .unwrap()
+                .on_days(2)
+                .unwrap()
+                .in_months(Months::from_to(11, 1).unwrap()),
+            duty: Duty::constant(q("25 %")).unwrap(),
+            ..lamp()
+        };
+        let at = |month, day| {
+            let conditions = Conditions { month, ambient: q("20 degC"), voltage: q("24 V"), day };
+            load.daily_energy(&conditions).map(|energy| energy.get::<watt_hour>())
+        };
+        // 3 · 10 W · 4 h · 0.25.
+        assert!((at(12, Day::Full).unwrap() - 30.0).abs() < 1e-12);
+        assert!((at(12, Day::Mean).unwrap() - 60.0 / 7.0).abs() < 1e-12);
+        assert_eq!(at(6, Day::Full), Ok(0.0));
+        assert!(at(0, Day::Full).is_err() && at(13, Day::Full).is_err());
+    }
+
+    #[test]
+    fn starts_count_units_that_start_at_once() {
+        let pump = |count, at_once| {
+            let start = Some(Start { multiple: q("4"), duration: None, at_once });
+            Load { count, start, ..Load::new(Draw::Power(q("100 W"))) }.start_extra().map(|part| part.value)
+        };
+        // One of two adds 3 · 100 W to 200 W.
+        assert_eq!(pump(2, 1), Ok(1.5));
+        assert_eq!(pump(2, 2), Ok(3.0));
+        assert!(matches!(pump(2, 3), Err(Error::Contradiction { name: "units that start at once", .. })));
+        assert!(pump(2, 0).is_err());
+        assert_eq!(lamp().start_extra().map(|part| part.value), Ok(0.0));
+    }
+
+    #[test]
+    fn a_load_of_no_duty_in_a_month_does_not_occur_in_it() {
+        let heater =
+            Load { duty: Duty::between(q("0 degC"), q("60 %"), q("15 degC"), q("0 %")).unwrap(), ..lamp() };
+        let mut year = [AmbientRange { least: q("16 degC"), greatest: q("30 degC") }; 12];
+        year[0] = AmbientRange { least: q("-20 degC"), greatest: q("0 degC") };
+        // A single cold night is enough.
+        year[4] = AmbientRange { least: q("14.9 degC"), greatest: q("30 degC") };
+        let occasion = heater.occasion(Some(&year)).unwrap();
+        for month in 1..=12 {
+            assert_eq!(occasion.contains(Slot { month, half_hour: 0 }), month == 1 || month == 5, "{month}");
+        }
+        // Without ambients nothing is left out.
+        assert_eq!(heater.occasion(None), Ok(Occasion::ALWAYS));
+        year[7].greatest = q("200 degC");
+        assert!(heater.occasion(Some(&year)).is_err());
+    }
+
+    #[test]
+    fn three_hours_are_continuous() {
+        let of = |window: &str| {
+            let schedule = Schedule::windows(&[window.parse().unwrap()]).unwrap();
+            Load { schedule, ..lamp() }.is_continuous()
+        };
+        assert!(of("22:30-01:30") && !of("22:30-01:29") && lamp().is_continuous());
+    }
+
+    #[test]
+    fn figures_out_of_range_are_errors() {
+        let volts = ElectricPotential::new::<volt>;
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -1.0] {
+            let power = Load::new(Draw::Power(Power::new::<watt>(bad)));
+            assert!(power.power_at(q("24 V")).is_err(), "{bad}");
+            assert!(
+                Load::new(Draw::Current(ElectricCurrent::new::<ampere>(bad))).current_at(q("24 V")).is_err()
+            );
+            let at = volts(bad);
+            assert!(Draw::Resistive { power: q("1 W"), at }.power_at(q("24 V")).is_err(), "{bad}");
+            assert!(lamp().power_at(volts(bad)).is_err() && lamp().apparent_at(volts(bad)).is_err(), "{bad}");
+            let terminals = Terminals::Ac { power_factor: Ratio::new::<ratio>(bad) };
+            assert!(Load { terminals, ..lamp() }.apparent_at(q("24 V")).is_err(), "{bad}");
+        }
+        assert!(lamp().power_at(volts(0.0)).is_err());
+        assert!(Load { count: 0, ..lamp() }.power_at(q("24 V")).is_err());
+        let terminals = Terminals::Ac { power_factor: q("0.8") };
+        let reactive = Load { terminals, ..lamp() }.apparent_at(q("24 V")).unwrap();
+        assert_eq!(reactive.get::<watt>(), 37.5);
+        let current = Load { terminals, ..Load::new(Draw::Current(q("1 A"))) };
+        assert!(matches!(current.power_at(q("24 V")), Err(Error::Contradiction { name: "current", .. })));
+        // Larger than any number.
+        assert!(Load::new(Draw::Power(Power::new::<watt>(f64::MAX))).current_at(volts(1e-300)).is_err());
     }
 }

@@ -119,3 +119,53 @@ calculations! {
         cold_duty + (warm_duty - cold_duty) * x
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::quantity::parse;
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+
+    fn part(x: f64) -> Ratio {
+        Ratio::new::<ratio>(x)
+    }
+
+    proptest! {
+        #[test]
+        fn a_duty_stays_between_its_two_figures(
+            cold in -40.0..20.0f64, width in 0.1..60.0f64, a in 0.0..=1.0f64, b in 0.0..=1.0f64, ambient in -90.0..150.0f64,
+        ) {
+            let duty = Duty::between(at(cold), part(a), at(cold + width), part(b)).unwrap();
+            let here = duty.at(at(ambient)).unwrap().value;
+            prop_assert!(here >= a.min(b) - 1e-15 && here <= a.max(b) + 1e-15);
+            if ambient <= cold { prop_assert_eq!(here, a); }
+            if ambient >= cold + width + 1e-9 { prop_assert!((here - b).abs() < 1e-15); }
+            // The greatest over a range is no less than anywhere in it.
+            let (low, high) = (ambient.min(cold), ambient.max(cold));
+            let greatest = duty.greatest(at(low), at(high)).unwrap().value;
+            for k in 0..=10 {
+                let between = low + (high - low) * f64::from(k) / 10.0;
+                prop_assert!(duty.at(at(between)).unwrap().value <= greatest + 1e-12);
+            }
+        }
+    }
+
+    #[test]
+    fn what_is_no_duty_is_refused() {
+        for bad in [-0.01, 1.01, f64::NAN, f64::INFINITY] {
+            assert!(Duty::constant(part(bad)).is_err(), "{bad}");
+        }
+        let half = parse("50 %").unwrap();
+        assert!(Duty::between(at(20.0), half, at(20.0), half).is_err());
+        assert!(Duty::between(at(30.0), half, at(20.0), half).is_err());
+        for bad in [-91.0, 151.0, f64::NAN, f64::INFINITY] {
+            assert!(Duty::full().at(at(bad)).is_err(), "{bad}");
+        }
+        assert_eq!(Duty::constant(half).unwrap().at(at(-20.0)), Ok(half));
+    }
+}

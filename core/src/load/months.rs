@@ -43,6 +43,11 @@ impl Months {
         Ok(Self((1..=MONTHS).filter(|&month| within(month)).fold(0, |set, month| set | bit(month))))
     }
 
+    /// A bit for each, January bit 0; bits from 12 on count for nothing.
+    pub const fn from_bits(bits: u16) -> Self {
+        Self(bits & Self::ALL.0)
+    }
+
     /// Whether a month belongs to them; false for what is no month.
     pub const fn contains(self, month: u8) -> bool {
         month >= 1 && month <= MONTHS && self.0 & bit(month) != 0
@@ -74,4 +79,43 @@ const fn bit(month: u8) -> u16 {
 
 pub(super) fn checked_month(month: u8) -> Result<u8, Error> {
     Allowed::Between(1.0, 12.0).check("month", f64::from(month), "").map(|()| month)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn ranges_go_round_the_year() {
+        for first in 1..=12u8 {
+            for last in 1..=12u8 {
+                // Counted off month by month.
+                let (mut listed, mut month) = (std::vec![first], first);
+                while month != last {
+                    month = month % 12 + 1;
+                    listed.push(month);
+                }
+                assert_eq!(Months::from_to(first, last), Months::of(&listed), "{first} to {last}");
+            }
+        }
+        assert_eq!(Months::from_to(1, 12), Ok(Months::ALL));
+    }
+
+    #[test]
+    fn what_is_no_month_is_refused_or_belongs_to_none() {
+        for bad in [0, 13, 255] {
+            assert!(
+                Months::of(&[1, bad]).is_err()
+                    && Months::from_to(bad, 1).is_err()
+                    && Months::from_to(1, bad).is_err()
+            );
+            assert!(!Months::ALL.contains(bad));
+        }
+        assert_eq!(Months::of(&[]), Ok(Months::NONE));
+        assert_eq!(Months::from_bits(0xffff), Months::ALL);
+        assert_eq!(Months::from_bits(1 << 11), Months::of(&[12]).unwrap());
+        assert_eq!(Months::of(&[12, 12]).unwrap().count(), 1);
+    }
+
+    extern crate std;
 }

@@ -166,3 +166,125 @@ impl Schedule {
 fn total(minutes: &[u8; 48]) -> f64 {
     f64::from(minutes.iter().map(|&m| u16::from(m)).sum::<u16>())
 }
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+
+    use super::*;
+
+    /// The minutes of a day, one by one.
+    fn by_the_minute(windows: &[(u16, u16)]) -> [bool; 1440] {
+        let mut day = [false; 1440];
+        for &(from, to) in windows {
+            let mut moment = from;
+            loop {
+                day[usize::from(moment)] = true;
+                moment = (moment + 1) % 1440;
+                if moment == to % 1440 {
+                    break;
+                }
+            }
+        }
+        day
+    }
+
+    /// Longest run of minutes without a break, round midnight.
+    fn longest(day: &[bool; 1440]) -> usize {
+        let (mut most, mut run) = (0, 0);
+        for moment in 0..2880 {
+            run = if day[moment % 1440] { run + 1 } else { 0 };
+            most = most.max(run);
+        }
+        most.min(1440)
+    }
+
+    fn schedule(windows: &[(u16, u16)]) -> Schedule {
+        let windows: std::vec::Vec<_> =
+            windows.iter().map(|&(from, to)| Window::minutes(from, to).unwrap()).collect();
+        Schedule::windows(&windows).unwrap()
+    }
+
+    extern crate std;
+
+    fn any_window() -> impl Strategy<Value = (u16, u16)> {
+        (0..1440u16, 0..=1440u16)
+            .prop_filter("no length", |(from, to)| from != to && (*from, *to) != (0, 1440))
+    }
+
+    proptest! {
+        #[test]
+        fn hours_and_half_hours_are_those_of_the_minutes(
+            windows in proptest::collection::vec(any_window(), 1..5),
+            days in 1..=7u8,
+        ) {
+            let (day, ours) = (by_the_minute(&windows), schedule(&windows).on_days(days).unwrap());
+            let minutes = day.iter().filter(|&&on| on).count();
+            prop_assert!((ours.hours_on_a_day().get::<minute>() - minutes as f64).abs() < 1e-9);
+            prop_assert!((ours.mean_hours().get::<minute>() * 7.0 - minutes as f64 * f64::from(days)).abs() < 1e-6);
+            for half_hour in 0..48u8 {
+                let slice = &day[30 * usize::from(half_hour)..][..30];
+                let on = slice.iter().filter(|&&on| on).count();
+                prop_assert_eq!(ours.may_run(6, half_hour), on > 0);
+                prop_assert_eq!(ours.half_hours() >> half_hour & 1 == 1, on > 0);
+                prop_assert!((ours.part_of(half_hour).value - on as f64 / 30.0).abs() < 1e-12);
+            }
+            // Gaps within a half-hour are not seen, so a run is never told too short.
+            prop_assert!(ours.longest_run().get::<minute>() >= longest(&day) as f64 - 1e-9);
+        }
+
+        #[test]
+        fn on_half_hours_a_run_is_that_of_the_minutes(
+            windows in proptest::collection::vec((0..48u16, 0..48u16), 1..5),
+        ) {
+            let windows: std::vec::Vec<_> =
+                windows.into_iter().filter(|(from, to)| from != to).map(|(from, to)| (30 * from, 30 * to)).collect();
+            prop_assume!(!windows.is_empty());
+            let run = schedule(&windows).longest_run().get::<minute>();
+            prop_assert_eq!(run, longest(&by_the_minute(&windows)) as f64);
+        }
+
+        #[test]
+        fn hours_within_windows_are_spread_over_them(
+            windows in proptest::collection::vec(any_window(), 1..4), part in 0.01..1.0f64,
+        ) {
+            let whole = schedule(&windows);
+            let windows: std::vec::Vec<_> =
+                windows.iter().map(|&(from, to)| Window::minutes(from, to).unwrap()).collect();
+            let ours = Schedule::within(&windows, whole.hours_on_a_day() * part).unwrap();
+            let sum: f64 = (0..48).map(|half_hour| 30.0 * ours.part_of(half_hour).value).sum();
+            prop_assert!((sum - ours.hours_on_a_day().get::<minute>()).abs() < 1e-9);
+            prop_assert_eq!(ours.half_hours(), whole.half_hours());
+            prop_assert!(ours.longest_run() <= ours.hours_on_a_day());
+        }
+    }
+
+    #[test]
+    fn hours_without_a_window_may_meet_everything() {
+        let four = Schedule::hours(Time::new::<hour>(4.0)).unwrap();
+        assert!((0..48).all(|half_hour| four.may_run(1, half_hour)));
+        assert!((four.part_of(7).value - 4.0 / 24.0).abs() < 1e-15);
+        assert_eq!(four.longest_run(), four.hours_on_a_day());
+        assert_eq!(Schedule::hours(Time::new::<hour>(24.0)), Ok(Schedule::CONTINUOUS));
+        for bad in [0.0, -1.0, 24.1, f64::NAN, f64::INFINITY] {
+            assert!(Schedule::hours(Time::new::<hour>(bad)).is_err(), "{bad}");
+        }
+    }
+
+    #[test]
+    fn what_contradicts_itself_is_refused() {
+        assert!(Schedule::windows(&[]).is_err());
+        let evening: Window = "18:00-22:00".parse().unwrap();
+        assert!(Schedule::within(&[evening], Time::new::<hour>(4.0)).is_ok());
+        assert!(matches!(
+            Schedule::within(&[evening], Time::new::<hour>(4.01)),
+            Err(Error::Contradiction { name: "hours_per_day", .. })
+        ));
+        for bad in [0, 8, 255] {
+            assert!(Schedule::CONTINUOUS.on_days(bad).is_err(), "{bad}");
+        }
+        let none = Schedule::CONTINUOUS.in_months(Months::NONE);
+        assert!((0..=13).all(|month| !none.may_run(month, 0)));
+        assert!(!Schedule::CONTINUOUS.may_run(1, 48) && Schedule::CONTINUOUS.part_of(48).value == 0.0);
+    }
+}

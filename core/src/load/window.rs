@@ -132,3 +132,79 @@ impl FromStr for Window {
         Self::minutes(from, to)
     }
 }
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::quantity::parse;
+
+    /// Whether a minute of the day lies inside.
+    fn inside(from: u16, to: u16, moment: u16) -> bool {
+        if from < to { (from..to).contains(&moment) } else { moment >= from || moment < to }
+    }
+
+    proptest! {
+        #[test]
+        fn half_hours_hold_the_minutes_inside(from in 0..1440u16, to in 0..=1440u16) {
+            prop_assume!(from != to);
+            let window = Window::minutes(from, to).unwrap();
+            let mut count = 0;
+            for half_hour in 0..48u16 {
+                let bits = window.within(half_hour);
+                for k in 0..30 {
+                    let moment = 30 * half_hour + k;
+                    prop_assert_eq!(bits >> k & 1 == 1, inside(from, to, moment), "{} at {}", window, moment);
+                    count += u16::from(inside(from, to, moment));
+                }
+            }
+            prop_assert_eq!(window.length(), count);
+            // What is printed reads again.
+            prop_assert_eq!(window.to_string().parse::<Window>(), Ok(window));
+        }
+    }
+
+    #[test]
+    fn texts_that_are_no_window_are_refused_with_an_example() {
+        for bad in [
+            "",
+            "-",
+            "18:00",
+            "18-23",
+            "18:00-23:60",
+            "18:00-25:00",
+            "24:01-02:00",
+            "18:0-19:00",
+            "a:00-b:00",
+            "18:00-23:00-24:00",
+            "+8:00-09:00",
+            "18:00–23:00",
+            "ß:00-01:00",
+        ] {
+            let told = bad.parse::<Window>().unwrap_err().to_string();
+            assert!(told.contains("18:00-23:30") || told.contains("0 and 1439"), "{bad}: {told}");
+        }
+        // The day ends at 24:00 and does not begin there.
+        assert!("24:00-02:00".parse::<Window>().is_err());
+        assert_eq!("00:00-24:00".parse(), Ok(Window::DAY));
+        assert_eq!(" 8:00 - 9:30 ".parse::<Window>().unwrap().to_string(), "08:00-09:30");
+        let none = "08:00-08:00".parse::<Window>().unwrap_err().to_string();
+        assert!(none.contains("for the whole day write 00:00-24:00"), "{none}");
+    }
+
+    #[test]
+    fn times_are_whole_minutes_within_a_day() {
+        let times = |from: &str, to: &str| Window::times(parse(from).unwrap(), parse(to).unwrap());
+        assert_eq!(times("7.1 h", "20.3 h").unwrap().to_string(), "07:06-20:18");
+        for (from, to) in [("7.505 h", "8 h"), ("-1 h", "8 h"), ("8 h", "25 h")] {
+            assert!(times(from, to).is_err(), "{from} to {to}");
+        }
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, 1e300] {
+            assert!(Window::times(Time::new::<minute>(bad), Time::new::<minute>(5.0)).is_err(), "{bad}");
+        }
+    }
+}
