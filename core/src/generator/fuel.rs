@@ -165,7 +165,7 @@ impl FuelCurve {
         Ok(Volume::new::<liter>(litres) / Time::new::<hour>(1.0))
     }
 
-    /// Lines of the curve within a range of loads: from, to, fuel there at the load's lower end, slope.
+    /// Fuel at a load, both in parts; `None` above the last point.
     pub(super) fn litres_per_hour(&self, load: f64) -> Option<f64> {
         let points = self.points.get(..self.count).unwrap_or_default();
         let (mut low, mut first) = ((0.0, 0.0), true);
@@ -221,4 +221,98 @@ calculations! {
         practice, no source"
     fallible "the rating is below 20 or above 500 kW"
     { FuelCurve::diesel(rated_power)?.at(output_power).map(|flow| flow * duration) }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use proptest::prelude::*;
+    use uom::si::ratio::ratio;
+
+    use super::*;
+
+    fn kw(kilowatts: f64) -> Power {
+        Power::new::<kilowatt>(kilowatts)
+    }
+
+    fn flow(litres: f64) -> VolumeFlow {
+        Volume::new::<liter>(litres) / Time::new::<hour>(1.0)
+    }
+
+    fn stated(points: &[(f64, f64)]) -> Result<FuelCurve, Error> {
+        let points: std::vec::Vec<_> =
+            points.iter().map(|&(load, fuel)| (Ratio::new::<ratio>(load), flow(fuel))).collect();
+        FuelCurve::stated(kw(5.0), &points)
+    }
+
+    #[test]
+    fn rows_and_columns_rise_as_they_were_printed() {
+        for pair in DIESEL.windows(2) {
+            assert!(pair[0].rating_kW < pair[1].rating_kW);
+            for (smaller, larger) in pair[0].fuel_L_per_h.iter().zip(pair[1].fuel_L_per_h) {
+                assert!(*smaller < larger);
+            }
+        }
+        for row in DIESEL {
+            assert!(row.fuel_L_per_h.windows(2).all(|pair| pair[0] < pair[1]), "{} kW", row.rating_kW);
+        }
+    }
+
+    #[test]
+    fn a_rating_between_two_rows_takes_the_larger() {
+        let of = |rating: f64, load: f64| {
+            litres_per_hour(FuelCurve::diesel(kw(rating)).unwrap().at(kw(load)).unwrap())
+        };
+        assert!((of(20.0, 10.0) - 3.4).abs() < 1e-12);
+        // 20.1 kW takes the row of 30 kW: 15 kW are half of it.
+        assert!((of(20.1, 15.0) - 6.8).abs() < 1e-12);
+        // Below a quarter the figure of a quarter.
+        assert!((of(20.0, 0.0) - 2.7).abs() < 1e-12 && (of(20.0, 5.0) - 2.7).abs() < 1e-12);
+        let small = FuelCurve::diesel(kw(19.9)).unwrap_err().to_string();
+        assert!(small.contains("begins at 20 kW; use the maker's"), "{small}");
+        assert!(FuelCurve::diesel(kw(500.1)).unwrap_err().to_string().contains("ends at 500 kW"));
+        assert_eq!(FuelCurve::diesel(kw(20.0)).unwrap().citation().seen, Seen::Page);
+    }
+
+    #[test]
+    fn curves_that_make_no_sense_are_refused() {
+        assert!(stated(&[(0.25, 0.8), (1.0, 1.9)]).is_ok());
+        for bad in
+            [&[][..], &[(0.5, 1.0), (0.5, 1.1)], &[(0.5, 1.0), (1.0, 0.9)], &[(1.3, 1.0)], &[(0.5, 0.0)]]
+        {
+            assert!(stated(bad).is_err(), "{bad:?}");
+        }
+        assert!(stated(&[(0.1, 1.0); 9]).is_err());
+        for bad in [f64::NAN, f64::INFINITY, -1.0] {
+            assert!(stated(&[(bad, 1.0)]).is_err() && stated(&[(0.5, bad)]).is_err(), "{bad}");
+            assert!(FuelCurve::diesel(kw(bad)).is_err() && FuelCurve::stated(kw(bad), &[]).is_err(), "{bad}");
+            assert!(stated(&[(1.0, 1.0)]).unwrap().at(kw(bad)).is_err(), "{bad}");
+        }
+        assert!(matches!(
+            stated(&[(0.5, 1.0)]).unwrap().at(kw(2.6)),
+            Err(Error::Contradiction { name: "output power", .. })
+        ));
+    }
+
+    proptest! {
+        #[test]
+        fn more_load_never_burns_less(rating in 20.0..500.0f64, a in 0.0..=1.0f64, b in 0.0..=1.0f64) {
+            let curve = FuelCurve::diesel(kw(rating)).unwrap();
+            let at = |part: f64| litres_per_hour(curve.at(kw(part * rating)).unwrap());
+            prop_assert!(at(a.min(b)) <= at(a.max(b)) + 1e-12);
+            // The catalogue's function for two hours.
+            let two =
+                fuel_consumption(kw(rating), kw(a * rating), Time::new::<hour>(2.0)).unwrap().get::<liter>();
+            prop_assert!((two - 2.0 * at(a)).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn no_set_delivers_more_than_its_rating() {
+        let one = Time::new::<hour>(1.0);
+        assert!(fuel_consumption(kw(25.0), kw(25.1), one).is_err());
+        assert!(matches!(fuel_consumption(kw(5.0), kw(4.0), one), Err(Error::TableEnds { .. })));
+    }
 }
