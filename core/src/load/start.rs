@@ -18,12 +18,12 @@ pub struct Start {
 }
 
 impl Start {
-    /// One unit after the other.
+    /// One unit after the other; the duration may be left open with `None`.
     ///
     /// # Errors
     /// [`Error::OutOfRange`] where the multiple is below 1, or the duration negative; infinite and NaN too.
-    pub fn one_by_one(multiple: Ratio, duration: Option<Time>) -> Result<Self, Error> {
-        let start = Self { multiple, duration, at_once: 1 };
+    pub fn one_by_one(multiple: Ratio, duration: impl Into<Option<Time>>) -> Result<Self, Error> {
+        let start = Self { multiple, duration: duration.into(), at_once: 1 };
         start.check().map(|()| start)
     }
 
@@ -101,7 +101,7 @@ mod tests {
     #[test]
     fn a_start_is_never_less_than_running() {
         let start = |multiple: &str, seconds| {
-            Start::one_by_one(parse(multiple).unwrap(), Some(Time::new::<second>(seconds)))
+            Start::one_by_one(parse(multiple).unwrap(), Time::new::<second>(seconds))
         };
         assert!(start("1", 0.0).is_ok() && start("6", 2.0).is_ok());
         assert!(start("0.99", 1.0).is_err() && start("2", -1.0).is_err());
