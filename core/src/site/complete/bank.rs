@@ -23,6 +23,7 @@ pub(super) fn stated(document: &Document, _site: &Site, stated: &BankPart) -> Re
         series: 1,
         cells: 0,
         limit: None,
+        charged_cold: None,
         nominal,
         capacity: part.capacity.ok_or_else(|| missing("key 'capacity' is missing"))?,
         strings: part.strings.unwrap_or(1),

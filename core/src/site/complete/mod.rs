@@ -12,17 +12,32 @@ mod stock;
 use alloc::string::String;
 use alloc::vec::Vec;
 
+use super::lines::{Rejected, Step};
 use super::model::Document;
 use super::parts::ControllerPart;
+use super::pv;
 use super::read::{Problem, Problems};
 use super::system::{BankEntry, Charger, ChargerKind, FeedKind, Site};
-use crate::quantity::ElectricCharge;
+use crate::quantity::{ElectricCharge, Ratio};
 
 /// Why the parts are what they are.
 #[derive(Clone, Debug, Default)]
 pub(super) struct Reasons {
     /// What was taken where the document says nothing.
     pub assumed: Vec<String>,
+    /// Of arrays that were designed.
+    pub arrays: Vec<ArrayReason>,
+}
+
+/// How an array came to its size.
+#[derive(Clone, Debug)]
+pub(super) struct ArrayReason {
+    pub name: String,
+    pub worst_month: Option<usize>,
+    pub reached: Option<Ratio>,
+    pub layout: String,
+    pub steps: Vec<Step>,
+    pub rejected: Vec<Rejected>,
 }
 
 /// The whole site of a document, with the reasons of what was designed.
@@ -92,6 +107,7 @@ fn add_feeds(site: &mut Site) {
             series: 1,
             cells: 0,
             limit: Some(converter.limit),
+            charged_cold: None,
             nominal: converter.output,
             capacity: ElectricCharge::default(),
             strings: 1,
@@ -104,7 +120,7 @@ fn add_feeds(site: &mut Site) {
         });
     }
     for index in 0..site.arrays.len() {
-        if let Some(feed) = array::feed(site, index) {
+        if let Some(feed) = pv::feed(site, index) {
             site.banks.push(feed);
         }
     }
