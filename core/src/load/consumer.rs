@@ -3,9 +3,9 @@
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
-use super::coincidence::Occasion;
 use super::duty::Duty;
 use super::months::checked_month;
+use super::occasion::Occasion;
 use super::schedule::Schedule;
 use super::start::Start;
 use crate::error::{Allowed, Error};
