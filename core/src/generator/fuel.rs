@@ -147,9 +147,11 @@ impl FuelCurve {
     ///
     /// # Example
     /// ```
-    /// use ampwright::{generator::FuelCurve, quantity::parse};
-    /// let small = FuelCurve::stated(parse("5 kW")?, &[(parse("50 %")?, parse("1.1 L/h")?), (parse("100 %")?, parse("1.9 L/h")?)])?;
-    /// assert!((small.at(parse("3.75 kW")?)?.value - ampwright::quantity::parse::<ampwright::quantity::VolumeFlow>("1.5 L/h")?.value).abs() < 1e-12);
+    /// use ampwright::{generator::FuelCurve, quantity::{Time, parse, readable}};
+    /// let points = [(parse("50 %")?, parse("1.1 L/h")?), (parse("100 %")?, parse("1.9 L/h")?)];
+    /// let small = FuelCurve::stated(parse("5 kW")?, &points)?;
+    /// let an_hour = small.at(parse("3.75 kW")?)? * parse::<Time>("1 h")?;
+    /// assert_eq!(readable(an_hour).to_string(), "1.5 L");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     pub fn at(&self, output: Power) -> Result<VolumeFlow, Error> {
@@ -208,8 +210,8 @@ calculations! {
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn fuel_consumption(
-        /// Of the set.
-        rated_power: Power in watt [> 0.0],
+        /// Of the set; of a smaller or larger one the chart says nothing.
+        rated_power: Power in watt [20000.0 ..= 500000.0],
         /// Delivered.
         output_power: Power in watt [>= 0.0],
         /// At this load.
@@ -219,8 +221,11 @@ calculations! {
     formula "V = v(P/P_row)·t, v linear between ¼, ½, ¾ and 1 of the row's rating, v(¼) below"
     source "a power rental company's chart of 20 to 500 kW (approximate); that lines may be drawn between its columns is common \
         practice, no source"
-    fallible "the rating is below 20 or above 500 kW"
-    { FuelCurve::diesel(rated_power)?.at(output_power).map(|flow| flow * duration) }
+    {
+        let flow = FuelCurve::diesel(rated_power).and_then(|curve| curve.at(output_power));
+        // Within the ranges there always is one.
+        Volume::new::<liter>(flow.map_or(f64::NAN, litres_per_hour) * duration.get::<hour>())
+    }
 }
 
 #[cfg(test)]
@@ -313,6 +318,9 @@ mod tests {
     fn no_set_delivers_more_than_its_rating() {
         let one = Time::new::<hour>(1.0);
         assert!(fuel_consumption(kw(25.0), kw(25.1), one).is_err());
-        assert!(matches!(fuel_consumption(kw(5.0), kw(4.0), one), Err(Error::TableEnds { .. })));
+        assert!(matches!(
+            fuel_consumption(kw(5.0), kw(4.0), one),
+            Err(Error::OutOfRange { name: "rated_power", .. })
+        ));
     }
 }
