@@ -88,6 +88,23 @@ pub(super) struct Demand {
 }
 
 impl Demand {
+    /// What further controllers draw day and night, where they are not joined yet.
+    pub fn add_idle(&mut self, idle: Power, site: &Site) {
+        if idle.value <= 0.0 {
+            return;
+        }
+        let losses = site.place.losses.map_or(WIRING_LOSS, |l| l.get::<ratio>());
+        let energy = idle * Time::new::<hour>(24.0);
+        for day in self.mean.iter_mut().chain(self.full.iter_mut()) {
+            let lost = energy / (1.0 - losses) - energy;
+            day.controllers += energy;
+            day.standing += energy;
+            day.wiring += lost;
+            day.total += energy + lost;
+        }
+        self.lists_standing = true;
+    }
+
     /// The greatest full day.
     pub fn greatest_day(&self) -> DayDemand {
         self.full.iter().copied().fold(DayDemand::NONE, |a, b| if b.total > a.total { b } else { a })

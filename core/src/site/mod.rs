@@ -1,6 +1,7 @@
 //! A whole site: its document, its checks, its report.
 
 mod bank;
+mod check;
 mod complete;
 mod energy;
 mod fault;
