@@ -69,7 +69,7 @@ pub fn coincident_power(
 /// Greatest coincident current, and with the largest start: as [`coincident_power`], in amperes.
 ///
 /// The currents are those at one voltage. A constant-power load draws most at the lowest, a resistive one at the
-/// highest: where that matters, the network is solved for each of the [`maximal_sets`] instead.
+/// highest: where that matters, the network is solved for each of the [`maximal_sets`](crate::load::maximal_sets) instead.
 ///
 /// # Errors
 /// As [`coincident_power`].
