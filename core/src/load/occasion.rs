@@ -33,10 +33,9 @@ impl Occasion {
         self.half_hours == 0 || self.months.count() == 0
     }
 
-    /// Half-hours in which it begins; none where it runs through.
+    /// Half-hours in which it begins; midnight counts as one, whether or not it ran before.
     const fn beginnings(&self) -> u64 {
-        let before = (self.half_hours << 1 | self.half_hours >> (HALF_HOURS - 1)) & EVERY_HALF_HOUR;
-        self.half_hours & !before
+        self.half_hours & !(self.half_hours << 1)
     }
 }
 
