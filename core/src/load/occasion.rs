@@ -54,8 +54,7 @@ pub(super) fn candidates(occasions: &[Occasion]) -> impl Iterator<Item = Slot> {
     // What runs through begins nowhere: midnight and January stand for it.
     let half_hours = occasions.iter().fold(1, |set, occasion| set | occasion.beginnings());
     let begins = |month: u8| {
-        let before = if month == 1 { MONTHS } else { month - 1 };
-        month == 1 || occasions.iter().any(|o| o.months.contains(month) && !o.months.contains(before))
+        month == 1 || occasions.iter().any(|o| o.months.contains(month) && !o.months.contains(month - 1))
     };
     let months = Months::ALL.filter(begins);
     (1..=MONTHS).filter(move |&month| months.contains(month)).flat_map(move |month| {
