@@ -3,6 +3,7 @@ mod conductors;
 mod devices;
 
 mod ampacity;
+mod energy;
 mod law;
 mod practice;
 mod protection_rules;

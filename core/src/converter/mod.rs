@@ -9,15 +9,27 @@ pub use controller::*;
 pub use dc_dc::*;
 
 mod charger;
+mod demand;
+mod efficiency;
+mod heat;
 mod inrush;
 mod inverter;
 
 use crate::catalogue::Entry;
 
 pub use charger::*;
+pub use demand::*;
+pub use efficiency::*;
+pub use heat::*;
 pub use inrush::*;
 pub use inverter::*;
 
 /// Every calculation of this room, by file.
-pub const CATALOGUE: &[&[Entry]] =
-    &[controller::ENTRIES, dc_dc::ENTRIES, inverter::ENTRIES, inrush::ENTRIES, charger::ENTRIES];
+pub const CATALOGUE: &[&[Entry]] = &[
+    controller::ENTRIES,
+    dc_dc::ENTRIES,
+    inverter::ENTRIES,
+    heat::ENTRIES,
+    inrush::ENTRIES,
+    charger::ENTRIES,
+];
