@@ -9,8 +9,8 @@ use uom::si::electric_current::ampere;
 use uom::si::length::meter;
 use uom::si::power::watt;
 use uom::si::ratio::ratio;
-use uom::si::thermodynamic_temperature::degree_celsius;
 use uom::si::temperature_coefficient::per_kelvin;
+use uom::si::thermodynamic_temperature::degree_celsius;
 use uom::si::time::day;
 
 use super::check::charge::source_of;
@@ -27,7 +27,9 @@ use super::system::{BankEntry, Charger, ChargerKind, Site};
 use crate::battery::{ChargeStage, data, disconnect, set_points, ventilation_flow, ventilation_opening};
 use crate::citation::{Citation, Seen};
 use crate::generator::{Recharge, generator_derated_power};
-use crate::quantity::{ChargeRate, ElectricCurrent, Ratio, RatioPerTemperature, ThermodynamicTemperature, Time};
+use crate::quantity::{
+    ChargeRate, ElectricCurrent, Ratio, RatioPerTemperature, ThermodynamicTemperature, Time,
+};
 
 /// Power that an engine loses for each kelvin above 25 °C. Common practice, no source.
 const HEAT_PER_K: f64 = 0.004;
@@ -54,7 +56,12 @@ pub(super) fn plant(site: &Site, demands: &[Demand], reasons: &Reasons) -> Plant
     }
     let name = |index: usize| site.banks.get(index).map_or_else(String::new, |b| b.name.clone());
     PlantLines {
-        banks: site.banks.iter().enumerate().filter_map(|(i, b)| bank_line(site, i, b, demands, reasons)).collect(),
+        banks: site
+            .banks
+            .iter()
+            .enumerate()
+            .filter_map(|(i, b)| bank_line(site, i, b, demands, reasons))
+            .collect(),
         demands: demands
             .iter()
             .filter_map(|d| {
@@ -74,7 +81,13 @@ pub(super) fn plant(site: &Site, demands: &[Demand], reasons: &Reasons) -> Plant
     }
 }
 
-fn bank_line(site: &Site, index: usize, bank: &BankEntry, demands: &[Demand], reasons: &Reasons) -> Option<BankLine> {
+fn bank_line(
+    site: &Site,
+    index: usize,
+    bank: &BankEntry,
+    demands: &[Demand],
+    reasons: &Reasons,
+) -> Option<BankLine> {
     let (chemistry, part) = (bank.chemistry()?, bank.part.as_ref()?);
     let mild = ThermodynamicTemperature::new::<degree_celsius>(25.0);
     let points = set_points(chemistry, bank.cells, mild).ok();
@@ -92,9 +105,10 @@ fn bank_line(site: &Site, index: usize, bank: &BankEntry, demands: &[Demand], re
     let duty = demand.filter(|d| d.banks.len() == 1).map(|d| Duty::of(site, part, bank.nominal, d, None));
     let need = duty.as_ref().filter(|d| d.daily.value > 0.0).and_then(|d| needed(chemistry, d).ok());
     let depth = part.depth.map_or(data(chemistry).usual_depth.value, |d| d.get::<ratio>());
-    let autonomy = duty.as_ref().filter(|d| d.daily.value > 0.0).map(|d| {
-        Time::new::<day>((bank.capacity * depth / d.daily).get::<ratio>())
-    });
+    let autonomy = duty
+        .as_ref()
+        .filter(|d| d.daily.value > 0.0)
+        .map(|d| Time::new::<day>((bank.capacity * depth / d.daily).get::<ratio>()));
     let mut steps = match (reason, &need) {
         (Some(reason), _) => reason.steps.clone(),
         (None, Some((_, _, steps))) => steps.clone(),
@@ -116,9 +130,9 @@ fn bank_line(site: &Site, index: usize, bank: &BankEntry, demands: &[Demand], re
         reconnect: part.reconnect.or_else(|| asked.filter(|_| part.designed).map(|a| a.reconnect)),
         absorption: own.absorption.or_else(|| points.map(|p| p.absorption.usual())),
         float: own.float.or_else(|| points.and_then(|p| p.float).map(|f| f.usual())),
-        equalise: own
-            .equalise
-            .or_else(|| points.filter(|_| own.absorption.is_none()).and_then(|p| p.equalise).map(|e| e.usual())),
+        equalise: own.equalise.or_else(|| {
+            points.filter(|_| own.absorption.is_none()).and_then(|p| p.equalise).map(|e| e.usual())
+        }),
         needed: need.map(|(need, _, _)| need),
         autonomy,
         steps,
@@ -213,8 +227,15 @@ fn generator_line(site: &Site, charger: &Charger) -> Option<GeneratorLine> {
     let power = part.power.filter(|_| engine).map(|power| {
         let altitude = site.place.altitude.unwrap_or_default();
         let hot = site.ambient.1;
-        steps.push(Step { what: "nameplate".to_string(), value: power.get::<watt>(), unit: "W", citation: None });
-        let left = generator_derated_power(power, altitude, hot, RatioPerTemperature::new::<per_kelvin>(HEAT_PER_K)).map_or(power, |d| d.power);
+        steps.push(Step {
+            what: "nameplate".to_string(),
+            value: power.get::<watt>(),
+            unit: "W",
+            citation: None,
+        });
+        let left =
+            generator_derated_power(power, altitude, hot, RatioPerTemperature::new::<per_kelvin>(HEAT_PER_K))
+                .map_or(power, |d| d.power);
         steps.push(Step {
             what: format!(
                 "left at {} m and {} °C",

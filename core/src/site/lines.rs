@@ -6,9 +6,7 @@ use alloc::vec::Vec;
 use super::energy::DayDemand;
 use crate::battery::Chemistry;
 use crate::citation::Citation;
-use crate::quantity::{
-    ElectricCharge, ElectricCurrent, ElectricPotential, Energy, Power, Ratio, Time,
-};
+use crate::quantity::{ElectricCharge, ElectricCurrent, ElectricPotential, Energy, Power, Ratio, Time};
 
 /// One step of a derivation.
 #[derive(Clone, Debug, PartialEq)]

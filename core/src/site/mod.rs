@@ -18,6 +18,7 @@ mod overrides;
 mod parts;
 mod plan;
 mod plant;
+mod plant_text;
 mod pv;
 mod reach;
 mod read;

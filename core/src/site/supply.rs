@@ -37,8 +37,7 @@ pub(super) fn module_power(site: &Site, module: &Module, month: usize) -> Power 
         .and_then(|w| w.temperature)
         .and_then(|t| t.get(month).copied())
         .unwrap_or(site.ambient.1);
-    let cell =
-        cell_temperature(air, module.noct().0, Irradiance::new::<watt_per_square_meter>(MEAN_SUN));
+    let cell = cell_temperature(air, module.noct().0, Irradiance::new::<watt_per_square_meter>(MEAN_SUN));
     let sheet = module.sheet();
     let coefficient = sheet.power_coefficient.map_or(POWER_PER_K, |c| c.get::<per_kelvin>());
     let rise = cell.map_or(0.0, |c| c.get::<degree_celsius>() - 25.0);
@@ -64,7 +63,11 @@ pub(super) fn day_energy(
     Some(if controller.kind == Some(ControllerKind::Pwm) {
         module.sheet().points.imp * f64::from(strings) * nominal * sun
     } else {
-        module_power(site, module, month) * f64::from(series) * f64::from(strings) * efficiency(controller) * sun
+        module_power(site, module, month)
+            * f64::from(series)
+            * f64::from(strings)
+            * efficiency(controller)
+            * sun
     })
 }
 
@@ -112,10 +115,11 @@ pub(super) fn generators_of(site: &Site, bank: usize) -> Energy {
         let (Some(part), Some(entry)) = (site.generators.get(index), site.banks.get(bank)) else { continue };
         let given = part.daily.or_else(|| {
             let hours = part.hours?.get::<hour>().min(24.0);
-            let hot = part.hot_output.map_or(
-                if part.kind == GeneratorKind::Alternator { ALTERNATOR_HOT } else { 1.0 },
-                |h| h.get::<ratio>(),
-            );
+            let hot = part
+                .hot_output
+                .map_or(if part.kind == GeneratorKind::Alternator { ALTERNATOR_HOT } else { 1.0 }, |h| {
+                    h.get::<ratio>()
+                });
             Some(part.output? * hot * entry.nominal * Time::new::<hour>(hours))
         });
         sum += given.unwrap_or_default() * stored(entry);

@@ -40,6 +40,7 @@ impl fmt::Display for Report {
         for line in &self.system {
             writeln!(f, "{}", printable(line))?;
         }
+        super::plant_text::print(&self.plant, f)?;
         self.summary(f)?;
         self.found(f)?;
         heading(f, "Circuits in detail")?;
@@ -340,7 +341,7 @@ fn list(f: &mut fmt::Formatter<'_>, head: &str, lines: &[String]) -> fmt::Result
 }
 
 /// Names come from a file: control characters must not reach a terminal.
-fn printable(text: &str) -> String {
+pub(super) fn printable(text: &str) -> String {
     text.chars().map(|c| if c.is_control() { '\u{fffd}' } else { c }).collect()
 }
 

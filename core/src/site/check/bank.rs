@@ -361,6 +361,7 @@ fn ventilation(bank: &BankEntry, chemistry: Chemistry, part: &BankPart, at: &mut
         (_, Some(own)) if own >= opening => {
             at.pass("R20", &format!("two openings of {} cm², at least {} cm²", digits(own), digits(opening)))
         }
+        (None, None) if part.designed => at.pass("R20", &format!("to be ventilated by {words}")),
         (None, None) => at.unmade(
             ("R20", "ventilation-not-stated"),
             &format!("ventilation: it needs {words}; state air or opening"),

@@ -515,7 +515,8 @@ fn reached(
     let demand = wanted.months.get(month).map_or(DayDemand::NONE, |d| *d);
     let kept = (1.0 - wanted.losses.get::<ratio>()) * wanted.charge_efficiency.get::<ratio>();
     let counts = (u32::from(layout.in_series), u32::from(layout.in_parallel));
-    let energy = day_energy(wanted.site, module, controller, counts, wanted.bank.nominal, month).unwrap_or_default();
+    let energy =
+        day_energy(wanted.site, module, controller, counts, wanted.bank.nominal, month).unwrap_or_default();
     if demand.total.value <= 0.0 {
         return Err("there is no demand to charge for".to_string());
     }
