@@ -21,6 +21,7 @@ mod part;
 mod path;
 mod place;
 mod start;
+mod trust;
 
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -47,6 +48,7 @@ fn pairs() -> Vec<Pair> {
         metal::pairs(),
         bank::pairs(),
         start::pairs(),
+        trust::pairs(),
     ]
     .into_iter()
     .flatten()

@@ -2,15 +2,22 @@
 // Unit suffixes keep the symbol's own case: `_A`, `_degC`.
 #![allow(non_snake_case)]
 
+mod charger;
 mod controller;
 mod controller_yield;
 mod dc_dc;
+mod inrush;
+mod inverter;
 
+pub use charger::*;
 pub use controller::*;
 pub use controller_yield::*;
 pub use dc_dc::*;
+pub use inrush::*;
+pub use inverter::*;
 
 use crate::catalogue::Entry;
 
 /// Every calculation of this room, by file.
-pub const CATALOGUE: &[&[Entry]] = &[controller_yield::ENTRIES, dc_dc::ENTRIES];
+pub const CATALOGUE: &[&[Entry]] =
+    &[controller_yield::ENTRIES, dc_dc::ENTRIES, inverter::ENTRIES, inrush::ENTRIES, charger::ENTRIES];

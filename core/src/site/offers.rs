@@ -8,9 +8,10 @@ use uom::si::electric_current::ampere;
 use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole, Site};
+use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole};
 use super::plan::{Draft, Fitted};
 use super::read::Problem;
+use super::system::Site;
 use crate::cable::{
     Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance,
 };

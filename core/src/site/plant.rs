@@ -6,10 +6,11 @@ use alloc::string::ToString;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
+use super::bank::cells;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
-use super::model::{BankEntry, Site};
 use super::plan::{Plan, sources};
+use super::system::{BankEntry, Site};
 use crate::battery::cell_voltages;
 use crate::citation::{Citation, Seen};
 use crate::protection::Earthing;
@@ -102,7 +103,11 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
                     Some(v) => (format!("inverter \"{}\"", v.name), v.line, v.least, v.greatest),
                     None => continue,
                 },
-                Item::Bank(_) | Item::Board(_) => continue,
+                Item::ConverterInput(i) => match site.converters.get(i) {
+                    Some(c) => (format!("converter \"{}\"", c.name), c.line, c.least, c.greatest),
+                    None => continue,
+                },
+                Item::Bank(_) | Item::Board(_) | Item::Charger(_) | Item::ControllerInput(_) => continue,
             };
             let highest = planned.flow.highest;
             match greatest.map(|g| g.get::<volt>()) {
@@ -185,7 +190,9 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
                 );
                 continue;
             }
-            if first.chemistry != other.chemistry {
+            if let (Some(one), Some(two)) = (first.chemistry(), other.chemistry())
+                && one != two
+            {
                 found.add(
                     Severity::Nonconforming,
                     "R15",
@@ -194,7 +201,7 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
                     other.line,
                     format!(
                         "{} beside {} of \"{}\": they neither share nor charge alike",
-                        other.chemistry, first.chemistry, first.name
+                        two, one, first.name
                     ),
                     None,
                     "join them through a converter or a selector, or use one chemistry",
@@ -219,8 +226,9 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
 
 /// What a bank states against what its cells do (R11): every voltage check rests on it.
 fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
-    let cells = bank.nominal.get::<volt>() / bank.chemistry.nominal_cell().get::<volt>();
-    let limits = cell_voltages(bank.chemistry);
+    let Some(chemistry) = bank.chemistry() else { return };
+    let cells = cells(bank, chemistry).0;
+    let limits = cell_voltages(chemistry);
     let (highest, cut_off) = (bank.highest.get::<volt>() / cells, bank.cut_off.get::<volt>() / cells);
     if highest < limits.charge_V {
         found.add(
@@ -269,7 +277,7 @@ fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
                 format!(
                     "short_circuit {} A stands beside a resistance that gives {} A",
                     digits(amps.get::<ampere>()),
-                    digits(crate::circuit::bound(by_resistance))
+                    digits(crate::circuit::upper_bound(by_resistance))
                 ),
                 None,
                 "state the one that the maker gives or that was measured",
@@ -280,7 +288,7 @@ fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
 
 /// Banks: discharge limit, touch voltage, what is known of the fault current.
 pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
-    for (index, bank) in site.banks.iter().enumerate() {
+    for (index, bank) in site.banks.iter().enumerate().filter(|(_, bank)| bank.is_battery()) {
         let place = format!("bank \"{}\"", bank.name);
         let drawn: f64 = site
             .circuits

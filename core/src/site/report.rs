@@ -9,12 +9,15 @@ use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
+use super::complete::complete;
 use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
-use super::model::{CircuitEntry, Return, Site};
+use super::model::{CircuitEntry, Document, Return};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
+use super::system::Site;
 use super::wiring::{findings, name_of, stud_of};
+use crate::battery::Chemistry;
 use crate::cable::{Conductor, Stud};
 use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
@@ -155,7 +158,9 @@ impl Report {
 /// assert!(report.to_string().contains("bank main"));
 /// # Ok::<(), String>(())
 /// ```
-pub fn inspect(site: &Site) -> Result<Report, Problems> {
+pub fn inspect(document: &Document) -> Result<Report, Problems> {
+    let (site, reasons) = complete(document)?;
+    let site = &site;
     let plan = plan(site)?;
     let circuits: Vec<CircuitLine> = site
         .circuits
@@ -175,7 +180,11 @@ pub fn inspect(site: &Site) -> Result<Report, Problems> {
         findings: found.list,
         passed: found.passed,
         purchases: purchases(site, &plan),
-        assumptions: assumptions(site, &plan),
+        assumptions: {
+            let mut lines = reasons.assumed;
+            lines.extend(assumptions(site, &plan));
+            lines
+        },
         recalled: recalled(&circuits),
         not_covered: not_covered(site),
         circuits,
@@ -276,7 +285,7 @@ fn system(site: &Site) -> Vec<String> {
             format!(
                 "bank \"{}\": {} {} V, {} Ah, from {} V at cut-off to {} V at its highest",
                 b.name,
-                b.chemistry,
+                b.chemistry().map_or("", Chemistry::word),
                 digits(b.nominal.get::<volt>()),
                 digits(b.capacity.get::<uom::si::electric_charge::ampere_hour>()),
                 digits(b.cut_off.get::<volt>()),
@@ -286,9 +295,9 @@ fn system(site: &Site) -> Vec<String> {
         .collect();
     let earth = site.rules.set().terms.earth;
     lines.push(match site.earthing {
-        super::model::Earthing::Negative => format!("negative pole to {earth} at one point"),
-        super::model::Earthing::Positive => format!("positive pole to {earth} at one point"),
-        super::model::Earthing::Floating => format!("neither pole to {earth}"),
+        Earthing::Negative => format!("negative pole to {earth} at one point"),
+        Earthing::Positive => format!("positive pole to {earth} at one point"),
+        Earthing::Floating => format!("neither pole to {earth}"),
     });
     lines.push(format!(
         "ambient {} to {} °C",
@@ -416,7 +425,8 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
             .to_string(),
     );
     lines.push(
-        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), metal of full area at the lowest ambient, \
+        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), or just charged at its highest voltage where that is \
+         more, metal of full area at the lowest ambient, \
          no joints; least fault: one bank alone, empty (1.98 V a lead-acid cell), its resistance raised for \
          discharge, cold and age (4.5 times lead-acid, 9 times lithium, 3.4 times nickel-cadmium; common practice), \
          conductors at their rated temperature, joints in"

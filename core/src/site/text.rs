@@ -15,7 +15,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::finding::{Severity, digits};
 use super::report::{CircuitLine, Report};
 use crate::cable::{Class, Coating, Conductor, Material};
-use crate::circuit::{Outcome, bound};
+use crate::circuit::{Outcome, lower_bound, upper_bound};
 use crate::citation::Seen;
 use crate::device::{Polarity, Supply};
 use crate::protection::{Guard, Pole};
@@ -190,7 +190,7 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     for d in &c.devices {
         let fault = d.greatest_fault.map_or_else(
             || "greatest fault current not known".to_string(),
-            |a| format!("greatest fault current {} A", rounded(a.get::<ampere>())),
+            |a| format!("greatest fault current {} A", digits(upper_bound(a.get::<ampere>()))),
         );
         row(
             f,
@@ -226,7 +226,7 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     let least = devices
         .chain(j.least_fault)
         .reduce(|a, b| if b < a { b } else { a })
-        .map_or_else(|| "not known".to_string(), |a| format!("{} A", rounded(a.get::<ampere>())));
+        .map_or_else(|| "not known".to_string(), |a| format!("{} A", digits(lower_bound(a.get::<ampere>()))));
     row(
         f,
         "loop",
@@ -337,11 +337,6 @@ fn list(f: &mut fmt::Formatter<'_>, head: &str, lines: &[String]) -> fmt::Result
         writeln!(f, "  - {}", printable(line))?;
     }
     Ok(())
-}
-
-/// Fault currents are bounds: two figures are as many as are honest.
-fn rounded(amps: f64) -> String {
-    digits(bound(amps))
 }
 
 /// Names come from a file: control characters must not reach a terminal.

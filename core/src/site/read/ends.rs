@@ -24,6 +24,12 @@ pub(super) enum Kind {
     Board,
     Inverter,
     Load,
+    Array,
+    Controller,
+    Generator,
+    Converter,
+    /// Where a controller or converter takes its power in; its output is a node of its own.
+    Inlet,
 }
 
 impl Kind {
@@ -33,11 +39,26 @@ impl Kind {
             Self::Board => "board",
             Self::Inverter => "inverter",
             Self::Load => "load",
+            Self::Array => "array",
+            Self::Controller => "controller",
+            Self::Generator => "generator",
+            Self::Converter => "converter",
+            Self::Inlet => "input",
         }
     }
 
     fn draws(self) -> bool {
-        matches!(self, Self::Inverter | Self::Load)
+        matches!(self, Self::Inverter | Self::Load | Self::Inlet)
+    }
+
+    /// It gives to what it is joined to, and takes nothing there.
+    fn gives(self) -> bool {
+        matches!(self, Self::Array | Self::Controller | Self::Generator | Self::Converter)
+    }
+
+    /// It keeps a network of its own at its voltage.
+    fn roots(self) -> bool {
+        matches!(self, Self::Bank | Self::Array | Self::Converter)
     }
 }
 
@@ -46,13 +67,23 @@ pub(super) struct Node<'d> {
     kind: Kind,
     name: &'d str,
     at: usize,
+    /// Its circuit is designed: its route is stated, or it needs none.
+    has_route: bool,
+    /// It is fed from the AC side.
+    is_ac: bool,
 }
 
 impl<'d> Node<'d> {
     /// `None` where the section states no name: that is reported with its section.
     pub(super) fn of(kind: Kind, found: Found<'d>) -> Option<Self> {
         let (name, _) = text_of(found, "name")?;
-        Some(Self { kind, name, at: found.at })
+        let is_ac = found.table.get("ac").and_then(|value| value.get_ref().as_bool()).unwrap_or(false);
+        Some(Self { kind, name, at: found.at, has_route: found.table.contains_key("route"), is_ac })
+    }
+
+    /// The input of a controller or converter.
+    fn inlet(&self) -> Option<Self> {
+        matches!(self.kind, Kind::Controller | Kind::Converter).then_some(Self { kind: Kind::Inlet, ..*self })
     }
 
     fn place(&self) -> String {
@@ -99,13 +130,23 @@ fn text_of<'d>(found: Found<'d>, key: &str) -> Option<(&'d str, usize)> {
 
 /// All nodes and circuits of a document.
 pub(super) struct Plan<'d> {
+    /// The named things, then the inputs of those that have one.
     nodes: Vec<Node<'d>>,
+    /// Input of a node, by its name.
+    inlets: BTreeMap<&'d str, usize>,
     wires: Vec<Wire<'d>>,
 }
 
 impl<'d> Plan<'d> {
     pub(super) fn new(nodes: Vec<Node<'d>>, wires: Vec<Wire<'d>>) -> Self {
-        Self { nodes, wires }
+        let (mut nodes, mut inlets) = (nodes, BTreeMap::new());
+        for index in 0..nodes.len() {
+            if let Some(inlet) = nodes.get(index).and_then(Node::inlet) {
+                inlets.insert(inlet.name, nodes.len());
+                nodes.push(inlet);
+            }
+        }
+        Self { nodes, inlets, wires }
     }
 
     /// Reports every problem of names, ends and ways.
@@ -130,7 +171,7 @@ impl<'d> Plan<'d> {
 
     fn names(&self, log: &mut Log) -> BTreeMap<&'d str, usize> {
         let mut names: BTreeMap<&str, usize> = BTreeMap::new();
-        for (index, node) in self.nodes.iter().enumerate() {
+        for (index, node) in self.nodes.iter().enumerate().filter(|(_, node)| node.kind != Kind::Inlet) {
             let first = *names.entry(node.name).or_insert(index);
             let Some(other) = self.nodes.get(first).filter(|_| first != index) else { continue };
             let sentence = format!(
@@ -157,7 +198,8 @@ impl<'d> Plan<'d> {
     }
 
     fn check_presence(&self, log: &mut Log) {
-        if !self.nodes.iter().any(|node| node.kind == Kind::Bank) {
+        let designs = self.nodes.iter().any(|node| node.kind == Kind::Load);
+        if !designs && !self.nodes.iter().any(|node| node.kind == Kind::Bank) {
             log.push_whole("there is no [[bank]]; write the one that feeds the site".to_owned());
         }
         if self.nodes.iter().any(|node| node.kind.draws()) {
@@ -185,12 +227,41 @@ impl<'d> Plan<'d> {
     ) -> Option<(usize, usize)> {
         let from = Self::end(wire, "from", wire.from, names, log);
         let to = Self::end(wire, "to", wire.to, names, log);
-        let (from, to) = (from?, to?);
-        if from == to {
+        let (from, named) = (from?, to?);
+        let target = self.nodes.get(named)?;
+        let to = self.inlets.get(target.name).copied().unwrap_or(named);
+        if target.is_ac || matches!(target.kind, Kind::Array | Kind::Generator) {
+            let at = wire.to.map_or(wire.at, |(_, at)| at);
+            let sentence = if target.is_ac {
+                format!(
+                    "{} is an AC load: its inverter feeds it, and no circuit of this file",
+                    Quoted(target.name)
+                )
+            } else {
+                format!(
+                    "{} is an {} and only gives: write the circuit the other way round, from it",
+                    Quoted(target.name),
+                    if target.kind == Kind::Array { "array" } else { "engine or other source" }
+                )
+            };
+            log.push(at, format!("{}, to", wire.place()), sentence);
+            return None;
+        }
+        if from == named {
             log.push(wire.at, wire.place(), "both ends are the same; mend 'from' or 'to'".to_owned());
             return None;
         }
         let source = self.nodes.get(from)?;
+        if let (Kind::Array, false) = (source.kind, matches!(target.kind, Kind::Controller | Kind::Board)) {
+            let at = wire.to.map_or(wire.at, |(_, at)| at);
+            let sentence = format!(
+                "{} is an array: it leads to a controller, or to a board before one, never to a {} itself",
+                Quoted(source.name),
+                target.kind.word()
+            );
+            log.push(at, format!("{}, to", wire.place()), sentence);
+            return None;
+        }
         if source.kind.draws() {
             let at = wire.from.map_or(wire.at, |(_, at)| at);
             let sentence = format!(
@@ -222,7 +293,10 @@ impl<'d> Plan<'d> {
         let sentence = match near {
             Some(word) => format!("nothing is named '{}'; did you mean '{}'?", Cut(name), Cut(word)),
             None => {
-                format!("nothing is named '{}'; name a bank, board, inverter or load of this file", Cut(name))
+                format!(
+                    "nothing is named '{}'; name a bank, board, inverter, load or source of this file",
+                    Cut(name)
+                )
             }
         };
         log.push(at, place, sentence);
@@ -239,6 +313,18 @@ impl<'d> Plan<'d> {
             let Some(node) = self.nodes.get(to) else { continue };
             let feed = feeds.get(to).copied().flatten();
             let first = feed.and_then(|first| self.wires.get(first));
+            if self.nodes.get(from).is_some_and(|node| node.kind == Kind::Array)
+                && let Some(&(other, _)) = ways.get(from).and_then(|list| list.first())
+            {
+                let other = self.wires.get(other).map_or_else(String::new, |wire| wire.label(log));
+                let sentence = format!(
+                    "{} feeds circuit {other} already: one array leads to one controller; state two arrays, or put a \
+                     board between",
+                    self.nodes.get(from).map_or("the array", |node| node.name)
+                );
+                log.push(wire.at, wire.place(), sentence);
+                continue;
+            }
             if let Some(first) = first.filter(|_| node.kind.draws()) {
                 let sentence = format!(
                     "{} {} is fed by circuit {} already; a load has one feed: put a board between, or take one out",
@@ -305,10 +391,11 @@ impl<'d> Plan<'d> {
         let mut reached = vec![false; self.nodes.len()];
         let mut queue: VecDeque<usize> = VecDeque::new();
         for (index, node) in self.nodes.iter().enumerate() {
-            if node.kind == Kind::Bank {
+            if node.kind.roots() {
                 queue.push_back(index);
             }
         }
+        self.add_designed(&mut onward);
         while let Some(index) = queue.pop_front() {
             match reached.get_mut(index) {
                 Some(seen) if !*seen => *seen = true,
@@ -318,15 +405,28 @@ impl<'d> Plan<'d> {
         }
         let no_bank = !self.nodes.iter().any(|node| node.kind == Kind::Bank);
         for (index, node) in self.nodes.iter().enumerate() {
-            if !node.kind.draws() || reached.get(index).copied().unwrap_or(true) {
+            let joined = onward.get(index).is_some_and(|list| !list.is_empty());
+            if node.kind.gives() && node.kind != Kind::Converter && !joined && !node.has_route {
+                let sentence = format!(
+                    "no circuit leads from it; write a [[circuit]] with from = {}, or state its route and it is designed",
+                    Quoted(node.name)
+                );
+                log.push(node.at, node.place(), sentence);
+                continue;
+            }
+            let first = feed.get(index).copied().flatten();
+            if !node.kind.draws() || node.is_ac || reached.get(index).copied().unwrap_or(true) {
+                continue;
+            }
+            // What is designed: a load with its route, the input of a controller, and all of it where the bank is.
+            if first.is_none() && (node.has_route || node.kind == Kind::Inlet) || no_bank {
                 continue;
             }
             let sentence = match feed.get(index).copied().flatten().map(|first| self.unfed(first, &feed)) {
-                None => {
-                    format!("no circuit leads to it; write a [[circuit]] with to = {}", Quoted(node.name))
-                }
-                // Without a bank nothing is fed, which was said already.
-                Some(_) if no_bank => continue,
+                None => format!(
+                    "no circuit leads to it; write a [[circuit]] with to = {}, or state its route and it is designed",
+                    Quoted(node.name)
+                ),
                 Some(Some(top)) => format!(
                     "no bank feeds it: it hangs on board {}, to which no circuit leads; write its feed",
                     Quoted(top.name)
@@ -334,6 +434,18 @@ impl<'d> Plan<'d> {
                 Some(None) => "no bank feeds it: the boards before it feed each other in a ring".to_owned(),
             };
             log.push(node.at, node.place(), sentence);
+        }
+    }
+
+    /// A bank that states its route, and from which no circuit leads, is joined to a board by the design.
+    fn add_designed(&self, onward: &mut [Vec<usize>]) {
+        let Some(board) = self.nodes.iter().position(|node| node.kind == Kind::Board) else { return };
+        for (index, node) in self.nodes.iter().enumerate() {
+            if let (Kind::Bank, true, Some(list)) = (node.kind, node.has_route, onward.get_mut(index))
+                && list.is_empty()
+            {
+                list.push(board);
+            }
         }
     }
 

@@ -78,9 +78,6 @@ impl<'d, 'l> Entry<'d, 'l> {
 
     fn unknown(&mut self, name: &str, section: &'static Section) -> String {
         let found = Cut(name);
-        if section.later.contains(&name) {
-            return format!("this version does not read '{found}' yet; take the line out");
-        }
         if name == "format" {
             return "'format' belongs at the top of the file, before the first section".to_owned();
         }

@@ -4,9 +4,14 @@ use super::circuits::{device_supply, metal, polarity, terminal_range};
 use super::entry::{Entry, Found};
 use super::keys::{
     BREAKING, CABLE, FAMILY, FULL_RATED, INSULATION, LENGTH, LET_THROUGH_KEY, LUG, PRICE, RATINGS, SHEATHED,
-    SIZE, STOCK, STOCK_CABLE, STOCK_DEVICE, STOCK_DEVICES, STOCK_LUG, STUD, TERMINAL,
+    SIZE, STOCK_CABLE, STOCK_DEVICE, STOCK_DEVICES, STOCK_LUG, STUD, TERMINAL,
 };
 use super::log::Log;
+use super::plant;
+use super::plant_keys::{
+    BATTERIES, STOCK, STOCK_BATTERY, STOCK_CONTROLLER, STOCK_CONTROLLERS, STOCK_INVERTER, STOCK_INVERTERS,
+    STOCK_MODULE, STOCK_MODULES,
+};
 use crate::cable::{Class, Coating, Material};
 use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
 
@@ -16,6 +21,10 @@ pub(super) fn stock<'d>(text: &'d str, log: &mut Log, found: Found<'d>) -> Stock
     let cables = entry.sections(&CABLE, &STOCK_CABLE);
     let devices = entry.sections(&STOCK_DEVICES, &STOCK_DEVICE);
     let lugs = entry.sections(&LUG, &STOCK_LUG);
+    let batteries = entry.sections(&BATTERIES, &STOCK_BATTERY);
+    let modules = entry.sections(&STOCK_MODULES, &STOCK_MODULE);
+    let controllers = entry.sections(&STOCK_CONTROLLERS, &STOCK_CONTROLLER);
+    let inverters = entry.sections(&STOCK_INVERTERS, &STOCK_INVERTER);
     Stock {
         cables: cables
             .into_iter()
@@ -29,6 +38,10 @@ pub(super) fn stock<'d>(text: &'d str, log: &mut Log, found: Found<'d>) -> Stock
             .into_iter()
             .filter_map(|found| lug(&mut Entry::open(text, log, &STOCK_LUG, found, None)))
             .collect(),
+        batteries: plant::all(text, log, &STOCK_BATTERY, batteries, plant::battery),
+        modules: plant::all(text, log, &STOCK_MODULE, modules, plant::module),
+        controllers: plant::all(text, log, &STOCK_CONTROLLER, controllers, plant::controller),
+        inverters: plant::all(text, log, &STOCK_INVERTER, inverters, plant::inverter),
     }
 }
 

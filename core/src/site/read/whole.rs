@@ -14,19 +14,27 @@ use super::ends::{Kind, Node, Plan, Wire};
 use super::entry::{Entry, Found, section, sections};
 use super::equipment;
 use super::keys::{
-    ALUMINIUM, ALUMINIUM_WORDS, BANK, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, EARTHING,
-    EARTHING_WORDS, ENGINE_SPACE, FORMAT, INVERTER, LATER, LOAD, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE,
-    RULES_SECTION, SITE, SITE_AMBIENT, STOCK, Section, TOP, UNFUSED_LENGTH,
+    ALUMINIUM, ALUMINIUM_WORDS, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, EARTHING,
+    EARTHING_WORDS, ENGINE_SPACE, FORMAT, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE, RULES_SECTION,
+    SITE_AMBIENT, Section, UNFUSED_LENGTH,
 };
 use super::log::{Cut, Log, nearest};
+use super::plant;
+use super::plant_keys::{
+    ARRAY, BANK, CONTROLLER, CONVERTER, GENERATOR, INVERTER, LOAD, READING, SITE, STOCK, TOP, WEATHER,
+};
+use super::references;
 use super::stock;
+use super::surroundings;
 use super::syntax;
+use super::times;
 use crate::quantity::ThermodynamicTemperature;
 use crate::rules::{Overrides, Rules};
-use crate::site::model::{Earthing, Site};
+use crate::site::model::{Document, Earthing};
+use crate::site::parts::Place;
 
 /// Reads a document of moderate length.
-pub(super) fn site(text: &str) -> Result<Site, Problems> {
+pub(super) fn site(text: &str) -> Result<Document, Problems> {
     let mut log = Log::new(text);
     let (tree, obstacles) = syntax::parsed(text, &mut log);
     let site = if obstacles.is_empty() {
@@ -43,7 +51,7 @@ pub(super) fn site(text: &str) -> Result<Site, Problems> {
     }
 }
 
-fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
+fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Document> {
     if !syntax::is_moderate(tree, log) {
         return None;
     }
@@ -72,7 +80,15 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
     let (overrides, overrides_at) = top.overrides(log);
     let stock = top.one("stock", &STOCK, log).map(|found| stock::stock(text, log, found));
 
+    let weather = top.one("weather", &WEATHER, log);
+    let weather = weather.map(|found| times::weather(&mut Entry::open(text, log, &WEATHER, found, None)));
+
     let banks = top.many("bank", &BANK, log);
+    let arrays = top.many("array", &ARRAY, log);
+    let controllers = top.many("controller", &CONTROLLER, log);
+    let generators = top.many("generator", &GENERATOR, log);
+    let converters = top.many("converter", &CONVERTER, log);
+    let readings = top.many("reading", &READING, log);
     let boards = top.many("board", &BOARD, log);
     let inverters = top.many("inverter", &INVERTER, log);
     let loads = top.many("load", &LOAD, log);
@@ -81,6 +97,10 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
     if is_whole {
         let nodes = [
             (Kind::Bank, &banks),
+            (Kind::Array, &arrays),
+            (Kind::Controller, &controllers),
+            (Kind::Generator, &generators),
+            (Kind::Converter, &converters),
             (Kind::Board, &boards),
             (Kind::Inverter, &inverters),
             (Kind::Load, &loads),
@@ -90,26 +110,48 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
         Plan::new(nodes.collect(), circuits.iter().map(|found| Wire::of(*found)).collect()).check(log);
     }
 
-    let banks = read_all(text, log, &BANK, &banks, equipment::bank);
+    let banks = read_all(text, log, &BANK, &banks, plant::bank);
+    let arrays = read_all(text, log, &ARRAY, &arrays, plant::array);
+    let controllers = read_all(text, log, &CONTROLLER, &controllers, plant::controller);
+    let generators = read_all(text, log, &GENERATOR, &generators, plant::generator);
+    let converters = read_all(text, log, &CONVERTER, &converters, plant::converter);
+    let readings = read_all(text, log, &READING, &readings, times::reading);
     let boards = read_all(text, log, &BOARD, &boards, equipment::board);
-    let inverters = read_all(text, log, &INVERTER, &inverters, equipment::inverter);
+    let inverters = read_all(text, log, &INVERTER, &inverters, plant::inverter);
     let loads = read_all(text, log, &LOAD, &loads, equipment::load);
+    let surroundings = head.as_ref().and_then(|head| Some(head.as_ref()?.3));
+    for found in &circuits {
+        surroundings::check(surroundings, *found, log);
+    }
     let mut reader = Circuits::new(text, &circuits);
     let circuits: Vec<_> = circuits.iter().map(|found| reader.circuit(log, *found)).collect();
 
-    let (name, rules, earthing, ambient) = head??;
-    Some(Site {
+    let (name, rules, earthing, ambient, place) = head??;
+    let weather = match weather {
+        Some(read) => Some(read?),
+        None => None,
+    };
+    let document = Document {
         name,
         rules: rules_with(rules, overrides, overrides_at, log)?,
         earthing,
         ambient,
+        place,
+        weather,
         banks: banks?,
+        arrays: arrays?,
+        controllers: controllers?,
+        generators: generators?,
+        converters: converters?,
+        readings: readings?,
         boards: boards?,
         inverters: inverters?,
         loads: loads?,
         circuits: circuits.into_iter().collect::<Option<_>>()?,
         stock: stock.unwrap_or_default(),
-    })
+    };
+    references::check(&document, log);
+    Some(document)
 }
 
 /// Reads every section of a kind, so that the problems of all are found.
@@ -125,7 +167,7 @@ fn read_all<'d, T>(
     entries.into_iter().collect()
 }
 
-type Head = (String, Rules, Earthing, (ThermodynamicTemperature, ThermodynamicTemperature));
+type Head = (String, Rules, Earthing, (ThermodynamicTemperature, ThermodynamicTemperature), Place);
 
 fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
     let name = entry.name();
@@ -148,7 +190,8 @@ fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
         );
         return None;
     }
-    Some((name?, rules?, earthing?, ambient?))
+    let place = times::place(entry);
+    Some((name?, rules?, earthing?, ambient?, place))
 }
 
 fn rules_with(rules: Rules, overrides: Overrides, at: usize, log: &mut Log) -> Option<Rules> {
@@ -177,18 +220,14 @@ impl<'d> Top<'d> {
                 continue;
             }
             let at = key.span().start;
-            let sentence = if LATER.contains(&name) {
-                format!(
-                    "this version does not read [{name}] sections yet; take them out, or comment them out"
-                )
-            } else if let Some(word) = nearest(name, TOP.iter().map(|&(known, _)| known)) {
+            let sentence = if let Some(word) = nearest(name, TOP.iter().map(|&(known, _)| known)) {
                 let meant = TOP.iter().find(|&&(known, _)| known == word).map_or("", |&(_, written)| written);
                 format!("no section '{}'; did you mean {meant}?", Cut(name))
             } else {
                 let all: Vec<&str> = TOP.iter().map(|&(_, written)| written).collect();
                 format!("no section '{}'; at the top stand {}", Cut(name), all.join(", "))
             };
-            is_all_known &= LATER.contains(&name);
+            is_all_known = false;
             log.push(at, String::new(), sentence);
         }
         is_all_known
