@@ -94,6 +94,50 @@ pub struct Layouts {
 ///
 /// # Errors
 /// [`Error::OutOfRange`] unless there are 1 to 1000 modules, and for a question outside its ranges.
+///
+/// # Example
+/// Six modules; the question is that of [`check_strings`]:
+/// ```
+/// # use ampwright::array::*;
+/// # use ampwright::{quantity::parse, rules::Rules};
+/// # let points = KeyPoints { voc: parse("22.5 V")?, isc: parse("6.1 A")?, vmp: parse("18.6 V")?, imp: parse("5.38 A")? };
+/// # let module = Module::new(ModuleSheet {
+/// #     voc_coefficient: Some(parse("-0.3 %/K")?),
+/// #     power_coefficient: Some(parse("-0.4 %/K")?),
+/// #     series_fuse: Some(parse("15 A")?),
+/// #     system_voltage: Some(parse("600 V")?),
+/// #     ..ModuleSheet::plain(parse("100 W")?, points)
+/// # })?;
+/// # let rules = Rules::named("us")?.pv();
+/// # let question = StringQuestion {
+/// #     module: &module, // 100 W: 22.5 V, 6.1 A
+/// #     input: InputLimits {
+/// #         greatest_voltage: Some(parse("100 V")?),
+/// #         start_margin: Some(parse("5 V")?),
+/// #         short_circuit_current: Some(parse("35 A")?),
+/// #         output_current: Some(parse("30 A")?),
+/// #         ..InputLimits::unknown(Regulation::Tracking)
+/// #     },
+/// #     coldest: parse("-20 degC")?,
+/// #     hottest_cell: parse("70 degC")?,
+/// #     cold_factor: rules.cold_factor(parse("-20 degC")?).ok(),
+/// #     bank_nominal: parse("12 V")?,
+/// #     bank_highest: parse("15.6 V")?,
+/// #     drop: parse("2 %")?,
+/// #     ageing: parse("0 %")?,
+/// #     factors: rules.factors(),
+/// #     device: StringDevice::ToChoose,
+/// #     ampacity: None,
+/// #     back_feed: Some(parse("0 A")?),
+/// #     parts: &[],
+/// # };
+/// let answer = layouts(&question, 6, Exposure::Open)?;
+/// let passing: Vec<_> = answer.trials.iter().filter(|t| t.refused.is_none()).map(|t| t.layout.in_series).collect();
+/// assert_eq!(passing, [2, 3]);
+/// let (chosen, why) = answer.preferred.unwrap();
+/// assert_eq!((chosen.layout.in_series, why), (3, Preference::Series));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn layouts(question: &StringQuestion<'_>, modules: u16, exposure: Exposure) -> Result<Layouts, Error> {
     checked("modules", f64::from(modules), "", Allowed::Between(1.0, MODULES))?;
     let mut trials: ArrayVec<LayoutTrial, TRIALS> = ArrayVec::new();

@@ -150,6 +150,26 @@ const MOST: f64 = 1e6;
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a need outside its ranges, or one that asks for more than a million strings.
+///
+/// # Example
+/// 40 Ah on every day of the year, and a dark December:
+/// ```
+/// use ampwright::array::{ArrayNeed, NeedMonth, array_need};
+/// use ampwright::quantity::parse;
+/// let mut months = [NeedMonth { demand: parse("40 Ah")?, sun_hours: parse("3.4 h")? }; 12];
+/// months[11].sun_hours = parse("1.1 h")?;
+/// let steps = array_need(&ArrayNeed {
+///     months,
+///     array_to_load: parse("1.2")?,
+///     losses: parse("10 %")?,
+///     charge_efficiency: parse("95 %")?,
+///     imp: parse("5.38 A")?,
+///     module_hot_voltage: parse("14.5 V")?,
+///     string_voltage: parse("15.6 V")?,
+/// })?;
+/// assert_eq!((steps.worst_month, steps.strings, steps.in_series, steps.modules), (11, 10, 2, 20));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn array_need(need: &ArrayNeed) -> Result<ArraySteps, Error> {
     let imp = need.imp.get::<uom::si::electric_current::ampere>();
     checked("imp", imp, "A", Allowed::AboveUpTo(0.0, 100.0))?;
@@ -190,6 +210,26 @@ pub fn array_need(need: &ArrayNeed) -> Result<ArraySteps, Error> {
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a need outside its ranges, or one that asks for more than a million modules.
+///
+/// # Example
+/// 500 Wh on every day of the year, and a dark December:
+/// ```
+/// use ampwright::array::{EnergyNeed, NeedMonth, energy_need};
+/// use ampwright::quantity::parse;
+/// let mut months = [NeedMonth { demand: parse("500 Wh")?, sun_hours: parse("3.4 h")? }; 12];
+/// months[11].sun_hours = parse("1.1 h")?;
+/// let steps = energy_need(&EnergyNeed {
+///     months,
+///     array_to_load: parse("1.2")?,
+///     losses: parse("10 %")?,
+///     controller_efficiency: parse("95 %")?,
+///     charge_efficiency: parse("95 %")?,
+///     module_power: parse("100 W")?,
+///     in_series: 2,
+/// })?;
+/// assert_eq!((steps.worst_month, steps.strings, steps.modules), (11, 4, 8));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn energy_need(need: &EnergyNeed) -> Result<EnergySteps, Error> {
     let power = need.module_power.get::<uom::si::power::watt>();
     checked("module_power", power, "W", Allowed::AboveUpTo(0.0, 5000.0))?;

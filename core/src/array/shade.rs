@@ -45,8 +45,37 @@ pub struct Shaded {
 
 /// Power of an array partly in shade, in series and in parallel.
 ///
+/// In parallel the shade falls on whole modules: half a module in shade is a string of groups of its own.
+///
 /// # Errors
 /// [`Error::OutOfRange`] for a case outside its ranges.
+///
+/// # Example
+/// A quarter of four modules with a fifth of the light:
+/// ```
+/// # use ampwright::array::*;
+/// # use ampwright::quantity::{parse, readable};
+/// # let points = KeyPoints { voc: parse("22.5 V")?, isc: parse("6.1 A")?, vmp: parse("18.6 V")?, imp: parse("5.38 A")? };
+/// # let module = Module::new(ModuleSheet {
+/// #     voc_coefficient: Some(parse("-0.3 %/K")?),
+/// #     power_coefficient: Some(parse("-0.4 %/K")?),
+/// #     series_fuse: Some(parse("15 A")?),
+/// #     system_voltage: Some(parse("600 V")?),
+/// #     ..ModuleSheet::plain(parse("100 W")?, points)
+/// # })?;
+/// let case = ShadeCase {
+///     conditions: Conditions::standard(),
+///     shaded_part: parse("25 %")?,
+///     light_left: parse("20 %")?,
+///     bypass_drop: parse("1 V")?,
+///     modules: 4,
+/// };
+/// let shaded = shade(&ModuleCurve::of(&module)?, &case)?;
+/// assert_eq!(readable(shaded.unshaded).to_string(), "400 W");
+/// assert_eq!(readable(shaded.series).to_string(), "295 W");
+/// assert_eq!(readable(shaded.parallel).to_string(), "318 W");
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn shade(curve: &ModuleCurve, case: &ShadeCase) -> Result<Shaded, Error> {
     let part = case.shaded_part.get::<ratio>();
     let left = case.light_left.get::<ratio>();

@@ -87,6 +87,22 @@ pub enum StringDevice {
     ToChoose,
 }
 
+impl InputLimits {
+    /// Nothing but the kind of regulation is stated.
+    pub const fn unknown(regulation: Regulation) -> Self {
+        Self {
+            regulation,
+            greatest_voltage: None,
+            window_low: None,
+            window_high: None,
+            start_margin: None,
+            short_circuit_current: None,
+            input_current: None,
+            output_current: None,
+        }
+    }
+}
+
 /// Everything that strings are held against.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct StringQuestion<'a> {
@@ -258,7 +274,7 @@ impl StringQuestion<'_> {
     }
 }
 
-/// Voltages of a string of so many modules, cold and hot.
+/// Voltages of a string of so many modules, cold and hot. [`check_strings`] has an example.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges.
@@ -290,7 +306,7 @@ pub fn string_voltages(question: &StringQuestion<'_>, in_series: u16) -> Result<
     })
 }
 
-/// Currents of so many strings in parallel.
+/// Currents of so many strings in parallel. [`check_strings`] has an example of a question.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges.
@@ -335,6 +351,52 @@ pub fn array_currents(question: &StringQuestion<'_>, in_parallel: u16) -> Result
 /// # Errors
 /// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges, [`Error::WrongCount`] for more than eight
 /// further parts. A check that fails, or lacks a datum, is no error.
+///
+/// # Example
+/// ```
+/// # use ampwright::array::*;
+/// # use ampwright::{quantity::parse, rules::Rules};
+/// # let points = KeyPoints { voc: parse("22.5 V")?, isc: parse("6.1 A")?, vmp: parse("18.6 V")?, imp: parse("5.38 A")? };
+/// # let module = Module::new(ModuleSheet {
+/// #     voc_coefficient: Some(parse("-0.3 %/K")?),
+/// #     power_coefficient: Some(parse("-0.4 %/K")?),
+/// #     series_fuse: Some(parse("15 A")?),
+/// #     system_voltage: Some(parse("600 V")?),
+/// #     ..ModuleSheet::plain(parse("100 W")?, points)
+/// # })?;
+/// let rules = Rules::named("us")?.pv();
+/// let question = StringQuestion {
+///     module: &module, // 100 W: 22.5 V, 6.1 A
+///     input: InputLimits {
+///         greatest_voltage: Some(parse("100 V")?),
+///         start_margin: Some(parse("5 V")?),
+///         short_circuit_current: Some(parse("35 A")?),
+///         output_current: Some(parse("30 A")?),
+///         ..InputLimits::unknown(Regulation::Tracking)
+///     },
+///     coldest: parse("-20 degC")?,
+///     hottest_cell: parse("70 degC")?,
+///     cold_factor: rules.cold_factor(parse("-20 degC")?).ok(),
+///     bank_nominal: parse("12 V")?,
+///     bank_highest: parse("15.6 V")?,
+///     drop: parse("2 %")?,
+///     ageing: parse("0 %")?,
+///     factors: rules.factors(),
+///     device: StringDevice::ToChoose,
+///     ampacity: None,
+///     back_feed: Some(parse("0 A")?),
+///     parts: &[],
+/// };
+/// let four = check_strings(&question, Layout { in_series: 4, in_parallel: 1 })?;
+/// assert_eq!(
+///     four.obstacle().unwrap().to_string(),
+///     "cold open-circuit voltage against the controller's greatest input voltage: 102.2 V, at most 100 V"
+/// );
+/// let three = check_strings(&question, Layout { in_series: 3, in_parallel: 2 })?;
+/// assert!(three.obstacle().is_none());
+/// assert_eq!(three.device_required, Some(false));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn check_strings(question: &StringQuestion<'_>, layout: Layout) -> Result<StringsChecked, Error> {
     let voltages = string_voltages(question, layout.in_series)?;
     let currents = array_currents(question, layout.in_parallel)?;

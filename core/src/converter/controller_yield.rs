@@ -52,6 +52,21 @@ pub struct ControllerYield {
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for figures outside their ranges, or a current of the array that is not finite.
+///
+/// # Example
+/// A hot module of 100 W on a bank at 13 V, its current taken as that of maximum power:
+/// ```
+/// use ampwright::converter::{ArrayInput, Controller, ControllerKind, controller_yield};
+/// use ampwright::quantity::{parse, readable};
+/// let array = ArrayInput { rated: parse("100 W")?, vmp: parse("16 V")?, imp: parse("5.4 A")?, voc: parse("20 V")? };
+/// let controller = Controller::plain(ControllerKind::Pwm, parse("20 A")?);
+/// let found = controller_yield(&controller, &array, parse("13 V")?, |_| array.imp)?;
+/// // 100 W less 13.6 W of heat, 16.2 W of volts that the clamp leaves, 1.4 W in the controller.
+/// assert_eq!(readable(found.temperature).to_string(), "13.6 W");
+/// assert_eq!(readable(found.voltage_mismatch).to_string(), "16.2 W");
+/// assert_eq!(readable(found.delivered).to_string(), "68.8 W");
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn controller_yield(
     controller: &Controller,
     array: &ArrayInput,
