@@ -10,7 +10,7 @@ use super::strings::{ArrayCurrents, CHECKS, Regulation, StringDevice, StringQues
 use crate::citation::{Citation, Seen};
 use crate::quantity::{ElectricCurrent, ElectricPotential};
 
-const RULE: Citation = Citation::new("ampwright", "rule R10", Seen::Practice);
+const RULE: Citation = Citation::new("design rule", "R10", Seen::Practice);
 const CONTROLLER: Citation = Citation::new("the controller's sheet", "", Seen::Stated);
 const PART: Citation = Citation::new("the part's sheet", "", Seen::Stated);
 
