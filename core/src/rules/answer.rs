@@ -210,7 +210,11 @@ impl Rules {
             return DropLimit {
                 ratio: Ratio::new::<ratio>(CHARGING_DROP),
                 required: true,
-                citation: Citation::new("design rule", "R11, sense at the bank or at most 1 %", Seen::Derived),
+                citation: Citation::new(
+                    "design rule",
+                    "R11, sense at the bank or at most 1 %",
+                    Seen::Derived,
+                ),
             };
         }
         if let Some(own) = self.overrides.drop {

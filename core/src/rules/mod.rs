@@ -14,6 +14,7 @@ mod overrides;
 mod practice;
 mod pv;
 mod query;
+mod surroundings;
 mod table;
 mod us;
 mod usual;
@@ -32,5 +33,9 @@ pub use pv::{ColdRow, ColdTable, PvRule};
 pub use query::{
     Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
     LoadUse, Space, Terms,
+};
+pub use surroundings::{
+    Asked, Bonding, BondingRow, OPENING_CM2_PER_M3_H, SPARK_DISTANCE_MM, SurgeLength, Surroundings,
+    TouchLimits,
 };
 pub use table::{AmpacityTable, Band, Cell, Column, FactorColumn, FactorTable};

@@ -1,19 +1,23 @@
 //! A whole site: its document, its checks, its report.
 
 mod bank;
+mod check;
 mod complete;
+mod energy;
 mod fault;
 mod finding;
 mod flow;
 mod graph;
 mod grow;
 mod joints;
+mod lines;
 mod model;
 mod offers;
 mod overrides;
 mod parts;
 mod plan;
 mod plant;
+mod pv;
 mod reach;
 mod read;
 mod report;
