@@ -12,13 +12,14 @@ use uom::si::temperature_coefficient::per_kelvin;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::dead::{RunTest, how, runs};
-use super::loaded::{LoadedTest, tests};
+use super::loaded::{LoadedTest, tests, untested};
 use super::meter::Meter;
 use crate::array::cell_temperature;
 use crate::battery::fault_voltage;
 use crate::quantity::{ElectricCurrent, ElectricPotential, Irradiance, ThermodynamicTemperature};
 use crate::site::bank::cells;
 use crate::site::finding::digits;
+use crate::site::graph::Item;
 use crate::site::parts::Charging;
 use crate::site::plan::Plan;
 use crate::site::system::{Array, BankEntry, Charger, Site};
@@ -126,6 +127,7 @@ pub(super) fn steps(site: &Site, plan: &Plan, meter: &Meter) -> Vec<Step> {
     for bank in site.banks.iter().filter(|b| b.is_battery()) {
         steps.extend(bank_steps(bank, meter));
     }
+    steps.extend(joined_banks(site, plan));
     steps.push(Step::Voltage {
         stage: Stage::OpenCircuit,
         place: "every board and load terminal, nothing drawing".to_string(),
@@ -142,6 +144,9 @@ pub(super) fn steps(site: &Site, plan: &Plan, meter: &Meter) -> Vec<Step> {
         steps.extend(array_steps(site, array, meter));
     }
     steps.extend(tests(site, plan, meter).into_iter().map(|test| Step::Loaded(Box::new(test))));
+    for (name, why) in untested(site, plan) {
+        steps.push(task(Stage::Loaded, named("circuit", name), format!("no figure to compare with: {why}")));
+    }
     for array in &site.arrays {
         let rated = array.module.imp * f64::from(array.strings);
         steps.push(task(
@@ -198,11 +203,7 @@ fn bank_steps(bank: &BankEntry, meter: &Meter) -> Vec<Step> {
         steps.push(Step::Task {
             stage: Stage::OpenCircuit,
             place: place.clone(),
-            what: format!(
-                "{} strings read apart; join them only when they differ by {} mV or less (common practice, no source)",
-                bank.strings,
-                digits(STRINGS_APART_MV_A_CELL * fewest)
-            ),
+            what: apart(&format!("{} strings read apart", bank.strings), fewest),
         });
     }
     let what = format!(
@@ -227,13 +228,48 @@ fn set_points(charger: &Charger) -> Option<String> {
     let volts = |word: &str, value: Option<ElectricPotential>| {
         value.map(|v| format!("{word} {} V", digits(v.get::<volt>())))
     };
-    let by_heat = compensation.map(|c| format!("{} mV/K a cell", digits(c.value * 1e3)));
     let list: Vec<String> =
-        [volts("absorption", absorption), volts("float", float), volts("equalise", equalise), by_heat]
+        [volts("absorption", absorption), volts("float", float), volts("equalise", equalise)]
             .into_iter()
             .flatten()
             .collect();
-    (!list.is_empty()).then(|| format!("set points entered: {} at 25 °C", list.join(", ")))
+    let by_heat = compensation.map(|c| format!("compensation {} mV/K a cell", digits(c.value * 1e3)));
+    let at_25 = (!list.is_empty()).then(|| format!("{} at 25 °C", list.join(", ")));
+    let all: Vec<String> = at_25.into_iter().chain(by_heat).collect();
+    (!all.is_empty()).then(|| format!("set points entered: {}", all.join("; ")))
+}
+
+/// Banks that conductors join (R15): brought together before the last device between them closes.
+fn joined_banks(site: &Site, plan: &Plan) -> Vec<Step> {
+    let mut steps = Vec::new();
+    for tree in &plan.trees {
+        let banks: Vec<(&BankEntry, f64)> = tree
+            .nodes
+            .iter()
+            .filter_map(|node| match node.item {
+                Item::Bank(i) => site.banks.get(i),
+                _ => None,
+            })
+            .filter_map(|bank| Some((bank, cells(bank, bank.chemistry()?).0)))
+            .collect();
+        let fewest = banks.iter().map(|(_, cells)| *cells).fold(f64::INFINITY, f64::min);
+        if banks.len() > 1 {
+            let names: Vec<String> = banks.iter().map(|(bank, _)| format!("\"{}\"", bank.name)).collect();
+            steps.push(Step::Task {
+                stage: Stage::OpenCircuit,
+                place: format!("banks {}", names.join(", ")),
+                what: apart("read apart", fewest),
+            });
+        }
+    }
+    steps
+}
+
+fn apart(what: &str, cells: f64) -> String {
+    format!(
+        "{what}; join them only when they differ by {} mV or less (common practice, no source)",
+        digits(STRINGS_APART_MV_A_CELL * cells)
+    )
 }
 
 /// Open-circuit volts of a string: cells as cold as on the coldest morning, to cells in full sun in the hottest air.

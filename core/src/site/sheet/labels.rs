@@ -64,6 +64,7 @@ pub(super) fn labels(site: &Site, plan: &Plan) -> Vec<Label> {
     for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
         let Some(planned) = planned else { continue };
         let volts = system_words(planned.flow.nominal, planned.flow.highest);
+        let from_source = |name: &String| site.chargers.iter().any(|c| c.name == *name);
         for fitted in &planned.fitted {
             let device = fitted.guard.device;
             let fed = if fitted.end == End::From { &circuit.to } else { &circuit.from };
@@ -72,12 +73,12 @@ pub(super) fn labels(site: &Site, plan: &Plan) -> Vec<Label> {
                 format!("device {}", fitted.name),
                 [
                     format!("{}: {} {} A", fitted.name, device.family, digits(device.rating.get::<ampere>())),
-                    format!("feeds {fed}"),
+                    // What stands at the other end of a charger's circuit is no load of it.
+                    if from_source(&circuit.from) { circuit.name.clone() } else { format!("feeds {fed}") },
                     volts.clone(),
                 ],
             ));
         }
-        let from_source = |name: &String| site.chargers.iter().any(|c| c.name == *name);
         let of_array = |name: &String| site.arrays.iter().any(|a| a.part.name == *name);
         let third = if of_array(&circuit.from) || of_array(&circuit.to) {
             "LIVE IN DAYLIGHT".to_string()

@@ -19,6 +19,7 @@ use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance};
 use crate::site::bank::cells;
 use crate::site::graph::{Graph, Item, Tree};
 use crate::site::joints::limits;
+use crate::site::model::Return;
 use crate::site::plan::{Plan, Planned};
 use crate::site::state::node_load;
 use crate::site::system::{BankEntry, FeedKind, Site};
@@ -139,6 +140,22 @@ pub(super) fn tests(site: &Site, plan: &Plan, meter: &Meter) -> Vec<LoadedTest> 
         });
     }
     tests
+}
+
+/// Circuits for which nothing can be expected, and why.
+pub(super) fn untested<'a>(site: &'a Site, plan: &Plan) -> Vec<(&'a str, &'static str)> {
+    let mut list = Vec::new();
+    for (index, (circuit, planned)) in site.circuits.iter().zip(&plan.circuits).enumerate() {
+        if planned.is_none() {
+            continue;
+        }
+        if circuit.way_back == Return::Chassis(None) {
+            list.push((circuit.name.as_str(), "the resistance of its return is not stated"));
+        } else if plan.collapsed.contains(&index) {
+            list.push((circuit.name.as_str(), "the line cannot carry its load"));
+        }
+    }
+    list
 }
 
 fn current(driven: Driven, amps: f64, meter: &Meter) -> Expected<ElectricCurrent> {

@@ -133,11 +133,12 @@ fn sources(site: &Site, add: &mut impl FnMut(Every, &str, &str)) {
         );
     }
     for charger in &site.chargers {
-        add(
-            YEARLY,
-            &format!("charging by \"{}\"", charger.name),
-            "set points as on the commissioning sheet, air ways clean",
-        );
+        let what = if charger.charging.absorption.is_some() || charger.charging.float.is_some() {
+            "set points as on the commissioning sheet, air ways clean"
+        } else {
+            "set points as entered, air ways clean"
+        };
+        add(YEARLY, &format!("charging by \"{}\"", charger.name), what);
     }
     for generator in &site.generators {
         let place = format!("\"{}\"", generator.name);

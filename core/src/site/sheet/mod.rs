@@ -13,6 +13,9 @@ mod purchases;
 mod switching;
 pub(super) mod text;
 
+#[cfg(test)]
+mod tests;
+
 use alloc::vec::Vec;
 
 pub use commissioning::{Expected, Stage, Step};

@@ -217,7 +217,7 @@ fn cables(site: &Site, plan: &Plan, basket: &mut Basket) {
 }
 
 /// A tenth on top, rounded up to the metre; what is a metre but for the last bit stays one.
-fn allowance(metres: f64) -> f64 {
+pub(super) fn allowance(metres: f64) -> f64 {
     libm::ceil(ALLOWANCE * metres - 1e-9)
 }
 
@@ -268,7 +268,13 @@ fn devices(site: &Site, plan: &Plan, basket: &mut Basket) {
             if guard.device.family.data().is_fuse {
                 holders.push((holder_words(&guard, fitted.specified), &circuit.name, pieces));
                 match links.iter_mut().find(|(known, ..)| same_link(known, &guard)) {
-                    Some(entry) => entry.2 = entry.2.saturating_add(pieces),
+                    Some(entry) => {
+                        entry.2 = entry.2.saturating_add(pieces);
+                        // One spare serves all of them: it breaks what the most exposed must.
+                        if guard.device.breaking > entry.0.device.breaking {
+                            entry.0 = guard;
+                        }
+                    }
                     None => links.push((guard, fitted.specified, pieces)),
                 }
             }
