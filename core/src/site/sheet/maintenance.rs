@@ -184,7 +184,7 @@ fn wiring(site: &Site, plan: &Plan, add: &mut impl FnMut(Every, &str, &str)) {
     }
     match site.place.monitoring {
         Some(Monitoring::Insulation) => {
-            add(MONTHLY, "insulation monitor", "reading written down, its test button")
+            add(MONTHLY, "insulation monitor", "reading written down, its test button");
         }
         Some(Monitoring::EarthFault) => add(MONTHLY, &format!("{earth}-fault detection"), "its test button"),
         Some(Monitoring::None) | None => {}

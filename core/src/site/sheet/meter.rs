@@ -8,11 +8,7 @@ use crate::citation::{Citation, Seen};
 use crate::quantity::{ElectricCurrent, ElectricPotential, Ratio};
 
 /// Source of accuracy and resolution of the usual meter.
-pub const METER: Citation = Citation::new(
-    "common practice, no source",
-    "accuracy and resolution of a hand-held meter",
-    Seen::Practice,
-);
+pub const METER: Citation = Citation::new("common practice, no source", "hand-held meter", Seen::Practice);
 
 /// Last digits that a reading may be wrong by, beside the part of the reading. Common practice, no source.
 const LAST_DIGITS: f64 = 2.0;

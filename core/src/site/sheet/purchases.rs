@@ -79,19 +79,16 @@ impl Basket {
         shelf: Option<f64>,
     ) {
         let price = each.map(|p| p * amount);
-        match self.0.iter_mut().find(|p| p.what == what && p.unit == unit) {
-            Some(line) => {
-                line.amount += amount;
-                if !place.is_empty() && line.places.last().is_none_or(|last| last != place) {
-                    line.places.push(place.to_string());
-                }
-                line.price = line.price.zip(price).map(|(a, b)| a + b);
+        if let Some(line) = self.0.iter_mut().find(|p| p.what == what && p.unit == unit) {
+            line.amount += amount;
+            if !place.is_empty() && line.places.last().is_none_or(|last| last != place) {
+                line.places.push(place.to_string());
             }
-            None => {
-                let places = if place.is_empty() { Vec::new() } else { alloc::vec![place.to_string()] };
-                self.0.push(Purchase { amount, unit, what, places, price, shelf });
-            }
+            line.price = line.price.zip(price).map(|(a, b)| a + b);
+            return;
         }
+        let places = if place.is_empty() { Vec::new() } else { alloc::vec![place.to_string()] };
+        self.0.push(Purchase { amount, unit, what, places, price, shelf });
     }
 
     fn pieces(&mut self, count: u32, what: String, place: &str, each: Option<f64>, shelf: Option<u32>) {
@@ -163,20 +160,15 @@ fn plant(site: &Site, basket: &mut Basket) {
 }
 
 fn controller_words(controller: &ControllerPart) -> String {
-    let mut words = String::from("charge controller");
-    if let Some(model) = &controller.model {
-        words.push(' ');
-        words.push_str(model);
-    }
-    words.push_str(match controller.kind {
+    let model = controller.model.as_ref().map_or_else(String::new, |model| format!(" {model}"));
+    let kind = match controller.kind {
         Some(ControllerKind::Pwm) => ", PWM",
         Some(ControllerKind::Mppt) => ", MPPT",
         None => "",
-    });
-    if let Some(output) = controller.output {
-        words.push_str(&format!(", {} A", digits(output.get::<ampere>())));
-    }
-    words
+    };
+    let output =
+        controller.output.map_or_else(String::new, |amps| format!(", {} A", digits(amps.get::<ampere>())));
+    format!("charge controller{model}{kind}{output}")
 }
 
 /// Circuits whose conductors were designed.

@@ -233,7 +233,7 @@ fn the_end_of_a_power_load_is_the_upper_root_of_its_quadratic() {
         let watts = load.power.unwrap().value * f64::from(load.count);
         let path: f64 = way.iter().map(|name| ohms(name)).sum();
         // V = (E + √(E² − 4·P·R))/2 with the bank's terminals at 24 V.
-        let hand = (24.0 + crate::quantity::sqrt(24.0 * 24.0 - 4.0 * watts * path)) / 2.0;
+        let hand = 0.5 * (24.0 + crate::quantity::sqrt(24.0 * 24.0 - 4.0 * watts * path));
         let test = loaded(&report).into_iter().find(|t| t.circuit == way[2]).unwrap();
         near(test.end.unwrap().value.unwrap().get::<volt>(), hand);
         near(test.current.value.unwrap().get::<ampere>(), watts / hand);

@@ -14,9 +14,9 @@ use super::commissioning::{Expected, Stage, Step};
 use super::dead::RunTest;
 use super::loaded::{Driven, LoadedTest};
 use super::maintenance::Every;
-use super::meter::Meter;
+use super::meter::{METER, Meter};
 use super::switching::Direction;
-use crate::quantity::{ElectricPotential, Figures};
+use crate::quantity::{ElectricCurrent, ElectricPotential, Figures};
 use crate::site::finding::digits;
 use crate::site::report::Report;
 use crate::site::text::{heading, printable, short};
@@ -93,15 +93,21 @@ fn commissioning(report: &Report, f: &mut fmt::Formatter<'_>) -> fmt::Result {
 }
 
 fn meter_words(meter: &Meter) -> String {
+    let millivolts = |v: ElectricPotential| digits(v.get::<millivolt>());
+    let amperes = |a: ElectricCurrent| digits(a.get::<ampere>());
     format!(
-        "tolerances include a meter of {} % and two last digits: 0.1 mV up to {} mV, 10 mV up to {} V; direct current in \
-         line {} % and 10 mA up to {} A, clamp {} % and 0.1 A (common practice, no source)",
+        "tolerances include a meter of {} % and two last digits: {} mV up to {} mV, {} mV up to {} V; direct current in \
+         line {} % and {} A up to {} A, clamp {} % and {} A ({METER})",
         digits(meter.volts.accuracy.get::<percent>()),
-        digits(meter.millivolts.up_to.get::<millivolt>()),
+        millivolts(meter.millivolts.resolution),
+        millivolts(meter.millivolts.up_to),
+        millivolts(meter.volts.resolution),
         digits(meter.volts.up_to.get::<volt>()),
         digits(meter.in_line.accuracy.get::<percent>()),
-        digits(meter.in_line.up_to.get::<ampere>()),
-        digits(meter.clamp.accuracy.get::<percent>())
+        amperes(meter.in_line.resolution),
+        amperes(meter.in_line.up_to),
+        digits(meter.clamp.accuracy.get::<percent>()),
+        amperes(meter.clamp.resolution)
     )
 }
 
@@ -250,7 +256,7 @@ fn joints(f: &mut fmt::Formatter<'_>, tests: &[&LoadedTest]) -> fmt::Result {
         let amps = test.current.value.unwrap_or_default();
         for joint in &test.joints {
             let count = if joint.count > 1 { format!("{} ", joint.count) } else { String::new() };
-            let at = |a: Option<crate::quantity::ElectricCurrent>| {
+            let at = |a: Option<ElectricCurrent>| {
                 a.map_or_else(|| "hidden".to_string(), |a| format!("{} A", two_up(a.get::<ampere>())))
             };
             let too_low = joint.current_needed.is_none_or(|needed| needed > amps);
