@@ -23,6 +23,7 @@ mod pv;
 mod reach;
 mod read;
 mod report;
+mod sheet;
 mod smaller;
 mod sources;
 mod state;
@@ -43,4 +44,8 @@ pub use parts::{
     Weather,
 };
 pub use read::{Problem, Problems, read, read_bytes};
-pub use report::{CircuitLine, DeviceLine, Purchase, Report, inspect};
+pub use report::{CircuitLine, DeviceLine, Report, inspect};
+pub use sheet::{
+    Direction, Driven, Every, Expected, JointTest, Label, LoadedTest, METER, MaintenanceTask, Meter,
+    MeterRange, Purchase, PurchaseTotal, RunTest, Stage, Step, SwitchingStep,
+};

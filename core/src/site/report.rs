@@ -1,12 +1,10 @@
 //! The report as data: what was found and designed, with its reasons. [`super::text`] turns it into words.
 
-use alloc::collections::BTreeMap;
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
 
 use uom::si::electric_potential::volt;
-use uom::si::length::meter;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::complete::complete;
@@ -17,10 +15,11 @@ use super::finding::{Finding, Severity, digits};
 use super::model::{CircuitEntry, Document, Return};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
+use super::sheet::{Label, MaintenanceTask, Meter, Purchase, Step, SwitchingStep, paper, purchases};
 use super::system::Site;
-use super::wiring::{findings, name_of, stud_of};
+use super::wiring::findings;
 use crate::battery::Chemistry;
-use crate::cable::{Conductor, Stud};
+use crate::cable::Conductor;
 use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
 use crate::protection::{Earthing, End, Guard, Pole};
@@ -91,23 +90,6 @@ pub struct CircuitLine {
     pub practice: Option<String>,
 }
 
-/// One line of what to buy.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Purchase {
-    /// How much: metres of single conductor, or pieces.
-    pub amount: f64,
-    /// `m` or `pcs`.
-    pub unit: &'static str,
-    /// What.
-    pub what: String,
-    /// Where it goes.
-    pub places: Vec<String>,
-    /// Price of all of it, where the stock states one.
-    pub price: Option<f64>,
-    /// What lies on the shelf of it, where the stock says so.
-    pub shelf: Option<f64>,
-}
-
 /// The whole report.
 #[derive(Clone, Debug)]
 pub struct Report {
@@ -129,6 +111,16 @@ pub struct Report {
     pub passed: Vec<String>,
     /// What to buy for what was designed.
     pub purchases: Vec<Purchase>,
+    /// The meter whose errors the commissioning sheet counts with.
+    pub meter: Meter,
+    /// Commissioning sheet, in working order.
+    pub commissioning: Vec<Step>,
+    /// Switching order: connecting, then disconnecting.
+    pub switching: Vec<SwitchingStep>,
+    /// Labels.
+    pub labels: Vec<Label>,
+    /// Maintenance, the most frequent first.
+    pub maintenance: Vec<MaintenanceTask>,
     /// What was taken where the document says nothing.
     pub assumptions: Vec<String>,
     /// Sources of which nobody has seen the page.
@@ -178,6 +170,7 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
     let demands = demands(site).unwrap_or_default();
     let found = findings(site, &plan, &demands);
     let plant = describe::plant(site, &demands, &reasons);
+    let paper = paper(site, &plan);
     Ok(Report {
         plant,
         name: site.name.clone(),
@@ -187,6 +180,11 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
         findings: found.list,
         passed: found.passed,
         purchases: purchases(site, &plan),
+        meter: paper.meter,
+        commissioning: paper.commissioning,
+        switching: paper.switching,
+        labels: paper.labels,
+        maintenance: paper.maintenance,
         assumptions: {
             let mut lines = reasons.assumed;
             lines.extend(assumptions(site, &plan));
@@ -313,99 +311,6 @@ fn system(site: &Site) -> Vec<String> {
         digits(site.ambient.1.get::<degree_celsius>())
     ));
     lines
-}
-
-/// What to buy for what was designed: conductor by the metre, devices by the piece.
-fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
-    let mut list: Vec<Purchase> = Vec::new();
-    let mut add = |amount: f64,
-                   unit: &'static str,
-                   what: String,
-                   place: &str,
-                   each: Option<f64>,
-                   shelf: Option<f64>| {
-        let price = each.map(|p| p * amount);
-        match list.iter_mut().find(|p| p.what == what && p.unit == unit) {
-            Some(line) => {
-                line.amount += amount;
-                if line.places.last().is_none_or(|last| last != place) {
-                    line.places.push(place.to_string());
-                }
-                line.price = line.price.zip(price).map(|(a, b)| a + b);
-            }
-            None => list.push(Purchase {
-                amount,
-                unit,
-                what,
-                places: alloc::vec![place.to_string()],
-                price,
-                shelf,
-            }),
-        }
-    };
-    let items = plan.trees.iter().flat_map(|t| t.nodes.iter().map(|n| n.item));
-    let studs: BTreeMap<&str, Stud> =
-        items.filter_map(|item| Some((name_of(site, item), stud_of(site, item)?))).collect();
-    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-        let Some(planned) = planned else { continue };
-        if planned.designed() {
-            let metres = circuit.positive_length.get::<meter>() + circuit.negative_length.get::<meter>();
-            let stock = site
-                .stock
-                .cables
-                .iter()
-                .find(|c| c.size == planned.positive.size && c.insulation == planned.positive.insulation);
-            add(
-                metres,
-                "m",
-                super::text::conductor_words(&planned.positive),
-                &circuit.name,
-                stock.and_then(|c| c.price),
-                stock.and_then(|c| c.length).map(|l| l.get::<meter>()),
-            );
-        }
-        for fitted in planned.fitted.iter().filter(|f| f.designed) {
-            let device = fitted.guard.device;
-            let price = site
-                .stock
-                .devices
-                .iter()
-                .find(|d| d.family == device.family && d.ratings.contains(&device.rating))
-                .and_then(|d| d.price);
-            // One in every unearthed pole (R7).
-            let pieces = f64::from(if site.earthing == Earthing::Floating { 2_u8 } else { 1 });
-            add(
-                pieces,
-                "pcs",
-                super::text::device_words(&fitted.guard, fitted.specified),
-                &circuit.name,
-                price,
-                None,
-            );
-        }
-        if planned.designed() {
-            for (name, lug) in [(&circuit.from, circuit.from_lug), (&circuit.to, circuit.to_lug)] {
-                let stud = studs.get(name.as_str()).copied();
-                if let Some(stud) = lug.or(stud) {
-                    let price = site
-                        .stock
-                        .lugs
-                        .iter()
-                        .find(|l| l.size == planned.positive.size && l.stud == stud)
-                        .and_then(|l| l.price);
-                    add(
-                        2.0,
-                        "pcs",
-                        format!("lug {} for {}", stud, planned.positive.size),
-                        &circuit.name,
-                        price,
-                        None,
-                    );
-                }
-            }
-        }
-    }
-    list
 }
 
 fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {

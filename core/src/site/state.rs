@@ -67,7 +67,7 @@ fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
 }
 
 /// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
-fn node_load(
+pub(super) fn node_load(
     site: &Site,
     item: Item,
     nominal: ElectricPotential,
