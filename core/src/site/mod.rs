@@ -1,6 +1,7 @@
 //! A whole site: its document, its checks, its report.
 
 mod bank;
+mod compare;
 mod complete;
 mod fault;
 mod finding;
@@ -16,6 +17,7 @@ mod plan;
 mod plant;
 mod reach;
 mod read;
+mod reading;
 mod report;
 mod smaller;
 mod state;
@@ -24,6 +26,7 @@ mod text;
 mod trust;
 mod wiring;
 
+pub use compare::{Change, Comparison};
 pub use finding::{Finding, Severity};
 pub use model::{
     Board, CircuitEntry, DeviceEntry, Document, Earthing, End, JointEntry, LoadEntry, LoadKind, LoadUseTime,
@@ -35,4 +38,5 @@ pub use parts::{
     Weather,
 };
 pub use read::{Problem, Problems, read, read_bytes};
+pub use reading::{Cause, CauseKind, Implied, Measured, NextMeasurement, ReadingLine, Verdict};
 pub use report::{CircuitLine, DeviceLine, Purchase, Report, inspect};

@@ -121,6 +121,8 @@ pub struct Report {
     pub circuits: Vec<CircuitLine>,
     /// Findings, gravest first.
     pub findings: Vec<Finding>,
+    /// What meters showed beside what is predicted, in the order of the document.
+    pub readings: Vec<super::reading::ReadingLine>,
     /// What passed on boards, parts, lugs and consumers; the checks of single runs stand with their circuits.
     pub passed: Vec<String>,
     /// What to buy for what was designed.
@@ -171,13 +173,15 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
             Some(line_of(site, &plan, index, circuit, planned.as_ref()?))
         })
         .collect();
-    let found = findings(site, &plan);
+    let mut found = findings(site, &plan);
+    let readings = super::reading::readings(site, &plan, &mut found);
     Ok(Report {
         name: site.name.clone(),
         edition: site.rules.set().edition.to_string(),
         overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
         system: system(site),
         findings: found.list,
+        readings,
         passed: found.passed,
         purchases: purchases(site, &plan),
         assumptions: {

@@ -42,6 +42,7 @@ impl fmt::Display for Report {
         }
         self.summary(f)?;
         self.found(f)?;
+        super::reading::section(&self.readings, f)?;
         heading(f, "Circuits in detail")?;
         for (number, circuit) in self.circuits.iter().enumerate() {
             writeln!(f)?;
@@ -340,7 +341,7 @@ fn list(f: &mut fmt::Formatter<'_>, head: &str, lines: &[String]) -> fmt::Result
 }
 
 /// Names come from a file: control characters must not reach a terminal.
-fn printable(text: &str) -> String {
+pub(super) fn printable(text: &str) -> String {
     text.chars().map(|c| if c.is_control() { '\u{fffd}' } else { c }).collect()
 }
 
