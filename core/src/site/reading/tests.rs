@@ -71,7 +71,8 @@ fn report(readings: &str) -> Report {
 /// Name, place, loads and the keys of a reading.
 fn reading(name: &str, at: &str, on: &str, keys: &str) -> String {
     let keys = keys.replace("; ", "\n");
-    format!("[[reading]]\nname = '{name}'\nat = '{at}'\non = [{on}]\n{keys}\n")
+    let on = if on.is_empty() { String::new() } else { format!("on = [{on}]\n") };
+    format!("[[reading]]\nname = '{name}'\nat = '{at}'\n{on}{keys}\n")
 }
 
 fn line<'a>(report: &'a Report, name: &str, what: &str) -> &'a ReadingLine {
@@ -406,7 +407,8 @@ proptest! {
                 prop_assert!(!narrow.causes.is_empty(), "{}", narrow);
             }
             if let Some((least, greatest)) = narrow.predicted {
-                prop_assert!(!format!("{least}{greatest}").contains("NaN"));
+                let shown = format!("{least}{greatest}");
+                prop_assert!(!shown.contains("NaN"), "{}", shown);
             }
         }
     }
