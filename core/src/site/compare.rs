@@ -2,7 +2,7 @@
 //!
 //! What reads alike is no change: figures are compared as they are printed.
 
-use alloc::collections::BTreeMap;
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
@@ -182,12 +182,12 @@ fn matched<T>(
     let later = keyed(later);
     let earlier: BTreeMap<_, _> =
         keyed(earlier).into_iter().enumerate().map(|(i, (k, v))| (k, (i, v))).collect();
-    let mut met: BTreeMap<&(String, String, usize), ()> = BTreeMap::new();
+    let mut met: BTreeSet<&(String, String, usize)> = BTreeSet::new();
     let mut changes = Vec::new();
     for (key, now) in &later {
         let (place, what, _) = key.clone();
         let before = earlier.get(key).map(|(_, v)| v);
-        met.insert(key, ());
+        met.insert(key);
         match before {
             Some(before) if before.text == now.text => {}
             before => changes.push(Change {
@@ -200,7 +200,7 @@ fn matched<T>(
             }),
         }
     }
-    let mut gone: Vec<_> = earlier.iter().filter(|(key, _)| !met.contains_key(key)).collect();
+    let mut gone: Vec<_> = earlier.iter().filter(|(key, _)| !met.contains(*key)).collect();
     gone.sort_by_key(|(_, (at, _))| *at);
     changes.extend(gone.into_iter().map(|((place, what, _), (_, before))| Change {
         place: place.clone(),
@@ -295,9 +295,10 @@ fn decisive(circuit: &CircuitLine, of: fn(Check) -> bool) -> String {
 /// What is compared of a circuit, with the check behind each.
 fn facts(c: &CircuitLine) -> Vec<(&'static str, Value)> {
     let plain = |text: String| Value { text, why: String::new() };
-    let negative = match c.negative == c.positive {
-        true => String::new(),
-        false => format!(", negative {}", conductor_words(&c.negative)),
+    let negative = if c.negative == c.positive {
+        String::new()
+    } else {
+        format!(", negative {}", conductor_words(&c.negative))
     };
     let devices: Vec<String> = c.devices.iter().map(|d| device_words(&d.guard, d.specified)).collect();
     let devices = match (devices.is_empty(), &c.guarded_by) {

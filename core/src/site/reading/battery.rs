@@ -1,7 +1,7 @@
 //! Readings at a bank: at rest, under load, and over a whole discharge.
 
 use alloc::format;
-use alloc::string::ToString;
+use alloc::string::{String, ToString};
 use alloc::vec::Vec;
 
 use uom::si::electric_charge::ampere_hour;
@@ -30,9 +30,9 @@ fn causes(bank: &BankEntry, kinds: &[CauseKind]) -> Vec<Cause> {
 }
 
 /// A measurement on every battery of a bank.
-fn each(bank: &BankEntry, what: &'static str, current: Option<ElectricCurrent>) -> Option<NextMeasurement> {
+fn each(bank: &BankEntry, what: &'static str, current: Option<ElectricCurrent>) -> NextMeasurement {
     let terminals = format!("the terminals of each battery of \"{}\"", bank.name);
-    Some(NextMeasurement { what, between: (terminals.clone(), terminals), current })
+    NextMeasurement { what, between: (terminals.clone(), terminals), current }
 }
 
 /// Least state of charge in use.
@@ -42,26 +42,26 @@ fn least_charge(bank: &BankEntry) -> f64 {
 }
 
 /// State of charge by a rest voltage; what is missing where there is none.
-fn charge_by_volts(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Result<Span, Outcome> {
-    let Some(chemistry) = bank.chemistry() else { return Err(bank_unknown("it is no bank of cells")) };
+fn charge_by_volts(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Result<Span, String> {
+    let Some(chemistry) = bank.chemistry() else { return Err("it is no bank of cells".to_string()) };
     let needed = rest::rest_h(chemistry);
     if !ask.under.on.is_empty() {
-        return Err(bank_unknown("a rest is stated beside loads that ran"));
+        return Err("a rest is stated beside loads that ran".to_string());
     }
     match ask.reading.rest.map(|t| t.get::<hour>()) {
         Some(rested) if rested >= needed => {}
         Some(rested) => {
-            return Err(bank_unknown(&format!(
+            return Err(format!(
                 "{} h without current, at least {} h before a rest voltage tells the charge (common practice, no \
                  source)",
                 Figures(rested),
                 Figures(needed)
-            )));
+            ));
         }
-        None => return Err(bank_unknown("how long it rested; state rest")),
+        None => return Err("how long it rested; state rest".to_string()),
     }
     let Some(table) = rest::table(chemistry) else {
-        return Err(bank_unknown(&format!("no table of rest voltages is held for {chemistry}")));
+        return Err(format!("no table of rest voltages is held for {chemistry}"));
     };
     let (fewest, most) = cells(bank, chemistry);
     Ok(Span::new(
@@ -78,7 +78,7 @@ pub(super) fn volts(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome {
     if ask.reading.rest.is_some() {
         return match charge_by_volts(ask, bank, read) {
             Ok(charge) => at_rest(ask, bank, read, charge),
-            Err(unknown) => unknown,
+            Err(why) => bank_unknown(&why),
         };
     }
     if let Some(outcome) = under_load(ask, bank, read) {
@@ -102,10 +102,12 @@ fn outside(ask: &Ask<'_>, bank: &BankEntry, outcome: &mut Outcome) {
     };
     outcome.grade = Grade::BankDiffers;
     outcome.causes = causes(bank, kinds);
-    outcome.next = match ask.under.on.is_empty() {
-        true => each(bank, "volts, with everything off,", None),
-        false => each(bank, "volts, first under this load and then with everything off,", None),
+    let what = if ask.under.on.is_empty() {
+        "volts, with everything off,"
+    } else {
+        "volts, first under this load and then with everything off,"
     };
+    outcome.next = Some(each(bank, what, None));
 }
 
 fn at_rest(ask: &Ask<'_>, bank: &BankEntry, read: Span, charge: Span) -> Outcome {
@@ -118,7 +120,12 @@ fn at_rest(ask: &Ask<'_>, bank: &BankEntry, read: Span, charge: Span) -> Outcome
         fewest * (value_at(table.volts, least) - table.spread_V),
         most * (value_at(table.volts, 1.0) + table.spread_V),
     );
-    let basis = format!("at rest, from {:.0} % of charge to full", least * 100.0);
+    let basis = format!(
+        "at rest, from {:.0} % of charge to full by the {}, {} mV a cell between sources",
+        least * 100.0,
+        table.source,
+        Figures(table.spread_V * 1e3)
+    );
     let mut outcome = Outcome::compared(read, predicted, basis);
     outcome.implied.push(implied_charge(charge));
     match outcome.verdict {
@@ -126,7 +133,7 @@ fn at_rest(ask: &Ask<'_>, bank: &BankEntry, read: Span, charge: Span) -> Outcome
             outcome.grade = Grade::BankDiffers;
             outcome.causes =
                 causes(bank, &[CauseKind::SurfaceCharge, CauseKind::SourceCharged, CauseKind::MeterLead]);
-            outcome.next = each(bank, "volts, after a longer rest with every source off,", None);
+            outcome.next = Some(each(bank, "volts, after a longer rest with every source off,", None));
         }
         Verdict::Below => {
             outcome.grade = Grade::BankLow;
@@ -136,7 +143,7 @@ fn at_rest(ask: &Ask<'_>, bank: &BankEntry, read: Span, charge: Span) -> Outcome
             } else {
                 "volts"
             };
-            outcome.next = each(bank, what, None);
+            outcome.next = Some(each(bank, what, None));
         }
         Verdict::Within | Verdict::NotComparable(_) => {}
     }
@@ -164,7 +171,7 @@ fn under_load(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Option<Outcome> {
         Figures(taken.greatest * 1e3)
     );
     let mut outcome = Outcome::compared(read, predicted, basis);
-    let own = unloaded.span.less(read).from_nought().over(current);
+    let own = unloaded.span.less(read).nought_or_more().over(current);
     let ohms = ElectricalResistance::new::<ohm>;
     outcome.implied.push(Implied::Internal(ohms(own.least), ohms(own.greatest)));
     match outcome.verdict {
@@ -178,12 +185,13 @@ fn under_load(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Option<Outcome> {
                 outcome.causes.extend(causes(bank, &[CauseKind::OtherLoadRan]));
             }
             let telling = meter::telling_current(ask.reading);
-            outcome.next = each(bank, "volts, and the drop over each link between them,", Some(telling));
+            outcome.next =
+                Some(each(bank, "volts, and the drop over each link between them,", Some(telling)));
         }
         Verdict::Above => {
             outcome.grade = Grade::BankDiffers;
             outcome.causes = causes(bank, &[CauseKind::SourceCharged, CauseKind::LoadDrawsLess]);
-            outcome.next = each(bank, "volts, and the amps of the bank, with every source off,", None);
+            outcome.next = Some(each(bank, "volts, and the amps of the bank, with every source off,", None));
         }
         Verdict::Within | Verdict::NotComparable(_) => {}
     }
@@ -250,8 +258,11 @@ pub(super) fn density(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome {
     outcome.grade = grade;
     outcome.causes = causes(bank, kinds);
     if outcome.causes.len() > 1 {
-        outcome.next =
-            each(bank, "density of every cell and volts at rest, after a charge that mixes the acid,", None);
+        outcome.next = Some(each(
+            bank,
+            "density of every cell and volts at rest, after a charge that mixes the acid,",
+            None,
+        ));
     }
     outcome
 }
@@ -316,17 +327,17 @@ pub(super) fn delivered(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome 
             if !is_warm {
                 outcome.causes.extend(causes(bank, &[CauseKind::ColdCells]));
             }
-            outcome.next = each(
+            outcome.next = Some(each(
                 bank,
                 "volts towards the end of the next discharge, and the temperature of the cells,",
                 None,
-            );
+            ));
         }
         Verdict::Above => {
             outcome.grade = Grade::BankDiffers;
             outcome.causes = causes(bank, &[CauseKind::SourceCharged, CauseKind::LoadDrawsLess]);
             outcome.next =
-                each(bank, "amps of the bank through a whole discharge, with every source off,", None);
+                Some(each(bank, "amps of the bank through a whole discharge, with every source off,", None));
         }
         Verdict::Within | Verdict::NotComparable(_) => {}
     }

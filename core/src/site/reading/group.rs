@@ -38,7 +38,7 @@ impl Conditions<'_> {
     /// Current into a node: read, or solved.
     pub fn current(&self, node: usize) -> Option<Span> {
         if let Some(read) = self.amps.get(&node) {
-            return Some(read.span.from_nought());
+            return Some(read.span.nought_or_more());
         }
         self.measured.as_ref().ok()?.amps.get(node).copied()
     }
@@ -68,9 +68,12 @@ pub(super) fn loads(reading: &Reading) -> Vec<&str> {
 /// By loads and tree.
 pub(super) type Groups<'a> = BTreeMap<(Vec<&'a str>, usize), Conditions<'a>>;
 
+/// The readings of a group with their places.
+type Members<'a> = Vec<(&'a Reading, Place)>;
+
 /// Sorts the readings into groups, and solves each.
 pub(super) fn groups<'a>(network: &Network<'_>, readings: &'a [Reading]) -> Groups<'a> {
-    let mut members: BTreeMap<(Vec<&str>, usize), Vec<(&Reading, Place)>> = BTreeMap::new();
+    let mut members: BTreeMap<(Vec<&str>, usize), Members<'_>> = BTreeMap::new();
     for reading in readings {
         if let Some(place) = network.place(&reading.at) {
             members.entry((loads(reading), place.tree)).or_default().push((reading, place));
@@ -98,7 +101,7 @@ fn conditions<'a>(
             if let Some(item @ (Item::Load(_) | Item::Inverter(_) | Item::ConverterInput(_))) =
                 network.item(place)
             {
-                currents.entry(item).or_insert_with(|| read.span.from_nought());
+                currents.entry(item).or_insert_with(|| read.span.nought_or_more());
             }
             amps.entry(place.node).or_insert_with(|| told(read));
         }

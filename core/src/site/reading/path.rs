@@ -1,6 +1,6 @@
 //! Volts at a place and the drop along a circuit: which circuits lose more than they should, and what that implies.
 
-use alloc::collections::BTreeMap;
+use alloc::collections::BTreeSet;
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec;
@@ -90,7 +90,7 @@ impl Question<'_> {
         let mut outcome = Outcome::compared(read, predicted, basis);
         match outcome.verdict {
             Verdict::Above => {
-                let extra = read.over(current).less(self.ohms(circuit)).from_nought();
+                let extra = read.over(current).less(self.ohms(circuit)).nought_or_more();
                 self.losing(&mut outcome, vec![Suspect { node, circuit, extra }], node);
             }
             Verdict::Below => self.gaining(&mut outcome, &[node]),
@@ -179,22 +179,19 @@ impl Question<'_> {
                 continue;
             };
             let predicted = current.times(self.ohms(circuit));
-            match self.under.drops.get(&circuit) {
-                Some(read) => {
-                    rest = rest.less(read.span);
-                    if read.span.is_above(predicted) {
-                        let extra = read.span.over(current).less(self.ohms(circuit)).from_nought();
-                        suspects.push(Suspect { node, circuit, extra });
-                    }
+            if let Some(read) = self.under.drops.get(&circuit) {
+                rest = rest.less(read.span);
+                if read.span.is_above(predicted) {
+                    let extra = read.span.over(current).less(self.ohms(circuit)).nought_or_more();
+                    suspects.push(Suspect { node, circuit, extra });
                 }
-                None => {
-                    expected = expected.plus(predicted);
-                    open.push((node, circuit, current));
-                }
+            } else {
+                expected = expected.plus(predicted);
+                open.push((node, circuit, current));
             }
         }
         if rest.is_above(expected) {
-            let missing = rest.less(expected).from_nought();
+            let missing = rest.less(expected).nought_or_more();
             suspects.extend(open.into_iter().map(|(node, circuit, current)| {
                 // What is missing beyond the rest of the stretch, all of it here.
                 Suspect { node, circuit, extra: missing.over(current) }
@@ -216,7 +213,7 @@ impl Question<'_> {
             heats.push(heat);
         }
         outcome.grade = Heat::grade(&heats);
-        let mut loads: BTreeMap<&str, ()> = BTreeMap::new();
+        let mut loads: BTreeSet<&str> = BTreeSet::new();
         for suspect in &suspects {
             outcome.causes.push(self.cause(CauseKind::BadJoint, suspect.node));
             outcome.causes.push(self.cause(CauseKind::ConductorThinnerOrLonger, suspect.node));
@@ -229,14 +226,14 @@ impl Question<'_> {
             }
             for (item, name) in self.loads_behind(suspect.node) {
                 if !self.under.amps.keys().any(|&n| self.item_of(n) == Some(item)) {
-                    loads.insert(name, ());
+                    loads.insert(name);
                 }
             }
             if !matches!(self.item_of(suspect.node), Some(Item::Load(_))) {
                 outcome.causes.push(self.cause(CauseKind::OtherLoadRan, suspect.node));
             }
         }
-        outcome.causes.extend(loads.keys().map(|name| Cause::new(CauseKind::LoadDrawsMore, name)));
+        outcome.causes.extend(loads.iter().map(|name| Cause::new(CauseKind::LoadDrawsMore, name)));
         if suspects.is_empty() {
             outcome.causes.push(Cause::new(CauseKind::OtherLoadRan, self.name(end)));
         }

@@ -13,6 +13,8 @@ pub(super) struct RestTable {
     pub spread_V: f64,
     /// (state of charge, relative density at about 25 °C), emptiest first.
     pub density: Option<&'static [(f64, f64)]>,
+    /// Source.
+    pub source: &'static str,
 }
 
 /// Battery council table, widely reprinted: page seen; `lead-acid-ocv-soc-flooded` of the reference.
@@ -21,6 +23,7 @@ const FLOODED: RestTable = RestTable {
     // Another source, page seen, is higher by 0.06 to 0.09 V for six cells at and below half charge.
     spread_V: 0.015,
     density: Some(&[(0.0, 1.12), (0.25, 1.155), (0.5, 1.19), (0.75, 1.225), (1.0, 1.265)]),
+    source: "battery council table, widely reprinted",
 };
 /// Typical published curve: recalled; `lfp-ocv-soc-typical` of the reference.
 const LFP: RestTable = RestTable {
@@ -40,6 +43,7 @@ const LFP: RestTable = RestTable {
     ],
     spread_V: 0.02,
     density: None,
+    source: "typical published curve (recalled)",
 };
 /// By how much the density of acid differs between sources at one state of charge: the middles of the bands of
 /// `lead-acid-ocv-soc-magazine` lie up to 0.025 above the table.

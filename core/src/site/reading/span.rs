@@ -43,7 +43,7 @@ impl Span {
     }
 
     /// Nothing below nought.
-    pub fn from_nought(self) -> Self {
+    pub fn nought_or_more(self) -> Self {
         Self { least: self.least.max(0.0), greatest: self.greatest.max(0.0) }
     }
 

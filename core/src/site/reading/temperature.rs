@@ -52,7 +52,7 @@ pub(super) fn joint(ask: &Ask<'_>, read: Span) -> Outcome {
             if current.greatest > 0.0 {
                 let watts = read
                     .less(Span::new(around, predicted.greatest))
-                    .from_nought()
+                    .nought_or_more()
                     .times(Span::exactly(JOINT_W_PER_K));
                 outcome
                     .implied

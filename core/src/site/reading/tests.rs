@@ -381,6 +381,99 @@ fn a_report_without_readings_has_no_section_of_them() {
     assert!(one.contains("\nReadings\n  a, amps at \"pump\": 10 A"), "{one}");
 }
 
+fn amps(measured: Measured) -> f64 {
+    match measured {
+        Measured::Amps(a) => a.get::<ampere>(),
+        _ => panic!("{measured:?}"),
+    }
+}
+
+/// A load on the AC side goes through the inverter: from no loss at all to its stated efficiency with its idle draw.
+#[test]
+fn an_inverter_draws_what_its_loads_take() {
+    let plant = "[[inverter]]\nname = 'inverter'\npower = '500 W'\nefficiency = '80 %'\nidle = '6 W'\n\
+                 [[load]]\nname = 'lamp'\npower = '80 W'\nac = true\n\
+                 [[circuit]]\nname = 'feed'\nfrom = 'main'\nto = 'inverter'\none_way = '1 m'\nsize = '35 mm2'\n";
+    let on = reading("a", "inverter", "'lamp'", "amps = '8 A'; volts = '12 V'; resolution = '1 mV'");
+    let off = reading("b", "inverter", "'pump'", "amps = '0.3 A'");
+    let report = report(&(plant.to_string() + &on + &off));
+    let (least, greatest) = line(&report, "a", "amps").predicted.unwrap();
+    // The bank was not read: 11 to 15 V, less little.
+    assert!((amps(least) - 80.0 / 15.0).abs() < 0.05, "{least}");
+    assert!((amps(greatest) - (100.0 + 6.0) / 11.0).abs() < 0.1, "{greatest}");
+    let (least, greatest) = line(&report, "b", "amps").predicted.unwrap();
+    assert_eq!(amps(least), 0.0);
+    assert!((amps(greatest) - 6.0 / 11.0).abs() < 0.01, "{greatest}");
+}
+
+/// 24 W behind a converter of 80 %: 24 to 30 W and a little in its own wiring.
+#[test]
+fn a_converter_draws_what_its_network_takes() {
+    let plant = "[[converter]]\nname = 'five'\noutput = '5 V'\nlimit = '10 A'\nefficiency = '80 %'\n\
+                 [[load]]\nname = 'radio'\ncurrent = '4.8 A'\n\
+                 [[circuit]]\nname = 'in'\nfrom = 'main'\nto = 'five'\none_way = '1 m'\nsize = '4 mm2'\n\
+                 [[circuit]]\nname = 'out'\nfrom = 'five'\nto = 'radio'\none_way = '1 m'\nsize = '4 mm2'\n";
+    let text = reading("bank", "house", "'radio'", "volts = '12 V'; resolution = '1 mV'")
+        + &reading("in", "in", "'radio'", "amps = '2.2 A'")
+        + &reading("out", "out", "'radio'", "amps = '4.8 A'; drop = '0.05 V'");
+    let report = report(&(plant.to_string() + &text));
+    let (least, greatest) = line(&report, "in", "amps").predicted.unwrap();
+    // Its output lies within 2 % of 5 V: common practice, no source.
+    assert!(amps(least) > 0.97 * 24.0 / 12.0 && amps(least) < 24.0 / 12.0, "{least}");
+    assert!(amps(greatest) > 30.0 / 12.0 && amps(greatest) < 1.04 * 30.0 / 12.0, "{greatest}");
+    let (least, greatest) = line(&report, "out", "amps").predicted.unwrap();
+    assert_eq!((amps(least), amps(greatest)), (4.8, 4.8));
+}
+
+/// A standing load may have run or not: nobody named it.
+#[test]
+fn a_standing_load_that_is_not_named_leaves_both_open() {
+    let plant = "[[load]]\nname = 'alarm'\ncurrent = '1 A'\nstanding = true\n\
+                 [[circuit]]\nname = 'alarm run'\nfrom = 'main'\nto = 'alarm'\none_way = '1 m'\nsize = '4 mm2'\n";
+    let at = |keys: &str| report(&(plant.to_string() + &reading("a", "feeder", PUMP, keys)));
+    let (least, greatest) = line(&at("amps = '10 A'"), "a", "amps").predicted.unwrap();
+    assert_eq!((amps(least), amps(greatest)), (10.0, 11.0));
+}
+
+#[test]
+fn two_banks_leave_open_which_of_them_feeds() {
+    let second = "[[bank]]\nname = 'reserve'\nchemistry = 'flooded'\nnominal = '12 V'\ncapacity = '200 Ah'\n\
+                  cut_off = '11 V'\nhighest = '15 V'\ninternal_resistance = '5 mohm'\n\
+                  [[circuit]]\nname = 'second'\nfrom = 'reserve'\nto = 'main'\none_way = '2 m'\nsize = '16 mm2'\n";
+    let text = reading("a", "pump", PUMP, "volts = '12 V'")
+        + &reading("b", "pump run", PUMP, "drop = '1 V'; amps = '10 A'");
+    let report = report(&(second.to_string() + &text));
+    let told = line(&report, "a", "volts").to_string();
+    assert!(told.contains("\"house\" and \"reserve\" may both feed it"), "{told}");
+    // Drop and amps of one circuit need no bank.
+    assert_eq!(line(&report, "b", "drop").verdict, Verdict::Above);
+}
+
+#[test]
+fn a_chassis_that_nobody_measured_is_not_compared() {
+    let text = HEAD.replace("name = \"pump run\"\n", "name = \"pump run\"\nreturn = \"chassis\"\n")
+        + &reading("a", "pump run", PUMP, "drop = '1 V'; amps = '10 A'");
+    let report = inspect(&read(&text).unwrap()).unwrap();
+    let told = line(&report, "a", "drop").to_string();
+    assert!(
+        told.contains("the resistance of the chassis as a return of \"pump run\" is not stated"),
+        "{told}"
+    );
+    // Stated, it is one of the causes.
+    let stated = text.replace("return = \"chassis\"", "return = \"chassis\"\nreturn_resistance = \"5 mohm\"");
+    let report = inspect(&read(&stated).unwrap()).unwrap();
+    assert!(kinds(line(&report, "a", "drop")).contains(&(CauseKind::ChassisReturn, "pump run")));
+}
+
+#[test]
+fn a_power_too_great_for_the_line_is_not_compared_but_told() {
+    let plant = "[[load]]\nname = 'winch'\npower = '3 kW'\n\
+                 [[circuit]]\nname = 'winch run'\nfrom = 'main'\nto = 'winch'\none_way = '30 m'\nsize = '16 mm2'\n";
+    let report = report(&(plant.to_string() + &reading("a", "winch", "'winch'", "volts = '5 V'")));
+    let told = line(&report, "a", "volts").to_string();
+    assert!(told.contains("no voltage carries them all"), "{told}");
+}
+
 proptest! {
     #![proptest_config(ProptestConfig { cases: 60, ..ProptestConfig::default() })]
 

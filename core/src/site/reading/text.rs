@@ -3,7 +3,7 @@
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
-use core::fmt;
+use core::fmt::{self, Write as _};
 
 use super::line::{Implied, Measured, ReadingLine, Verdict};
 use super::span::Span;
@@ -64,18 +64,19 @@ pub(super) fn finding(measured: Measured, outcome: &Outcome) -> String {
     let mut text = format!("{measured} read, {} to {} predicted", measured.of(least), measured.of(greatest));
     let worst = outcome.implied.iter().max_by(|a, b| heat(a).total_cmp(&heat(b)));
     if let Some(implied) = worst.filter(|_| outcome.grade != Grade::AboveDesign) {
-        text.push_str(&format!("; implies {implied}"));
+        // Writing to a String cannot fail.
+        let _ = write!(text, "; implies {implied}");
     }
     match outcome.grade {
         Grade::AboveDesign => {
-            text.push_str("; it is above the current of the worst hour that everything was sized for")
+            text.push_str("; it is above the current of the worst hour that everything was sized for");
         }
         Grade::AboveCapacity => text.push_str("; it is above what the conductor carries"),
         Grade::TooHot => text.push_str("; it is above the rating of the insulation"),
         _ => {}
     }
     if outcome.causes.len() > 1 {
-        text.push_str(&format!("; {} causes are consistent with it", outcome.causes.len()));
+        let _ = write!(text, "; {} causes are consistent with it", outcome.causes.len());
     }
     text
 }
