@@ -2,6 +2,7 @@
 
 mod bank;
 mod check;
+mod compare;
 mod complete;
 mod describe;
 mod energy;
@@ -22,6 +23,7 @@ mod plant_text;
 mod pv;
 mod reach;
 mod read;
+mod reading;
 mod report;
 mod sheet;
 mod smaller;
@@ -33,7 +35,13 @@ mod text;
 mod trust;
 mod wiring;
 
+pub use compare::{Change, Comparison};
+pub use describe::PlantLines;
+pub use energy::DayDemand;
 pub use finding::{Finding, Severity};
+pub use lines::{
+    ArrayLine, BankLine, DemandLine, GeneratorLine, InverterLine, Rejected, Step as DerivationStep,
+};
 pub use model::{
     Board, CircuitEntry, DeviceEntry, Document, Earthing, End, JointEntry, LoadEntry, LoadKind, LoadUseTime,
     Part, PartKind, Pole, Return, Stock, StockCable, StockDevice, StockLug,
@@ -44,6 +52,7 @@ pub use parts::{
     Weather,
 };
 pub use read::{Problem, Problems, read, read_bytes};
+pub use reading::{Cause, CauseKind, Implied, Measured, NextMeasurement, ReadingLine, Verdict};
 pub use report::{CircuitLine, DeviceLine, Report, inspect};
 pub use sheet::{
     Direction, Driven, Every, Expected, JointTest, Label, LoadedTest, METER, MaintenanceTask, Meter,

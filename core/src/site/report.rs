@@ -107,6 +107,8 @@ pub struct Report {
     pub circuits: Vec<CircuitLine>,
     /// Findings, gravest first.
     pub findings: Vec<Finding>,
+    /// What meters showed beside what is predicted, in the order of the document.
+    pub readings: Vec<super::reading::ReadingLine>,
     /// What passed on boards, parts, lugs and consumers; the checks of single runs stand with their circuits.
     pub passed: Vec<String>,
     /// What to buy for what was designed.
@@ -168,9 +170,10 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
         })
         .collect();
     let demands = demands(site).unwrap_or_default();
-    let found = findings(site, &plan, &demands);
+    let mut found = findings(site, &plan, &demands);
     let plant = describe::plant(site, &demands, &reasons);
     let paper = paper(site, &plan);
+    let readings = super::reading::readings(site, &plan, &mut found);
     Ok(Report {
         plant,
         name: site.name.clone(),
@@ -178,6 +181,7 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
         overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
         system: system(site),
         findings: found.list,
+        readings,
         passed: found.passed,
         purchases: purchases(site, &plan),
         meter: paper.meter,

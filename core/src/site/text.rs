@@ -43,6 +43,7 @@ impl fmt::Display for Report {
         super::plant_text::print(&self.plant, f)?;
         self.summary(f)?;
         self.found(f)?;
+        super::reading::section(&self.readings, f)?;
         heading(f, "Circuits in detail")?;
         for (number, circuit) in self.circuits.iter().enumerate() {
             writeln!(f)?;
