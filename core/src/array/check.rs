@@ -77,16 +77,18 @@ pub struct PvCheck {
     pub subject: PvSubject,
     /// How it went.
     pub outcome: PvOutcome,
-    /// The value found, in `unit`.
+    /// The value found, in `unit`; 0 where it is not known.
     pub value: f64,
-    /// Its limit, in `unit`.
+    /// Its limit, in `unit`; 0 where it is not known.
     pub limit: f64,
     /// Unit of both.
     pub unit: &'static str,
     /// How they relate.
     pub relation: PvRelation,
-    /// What was compared, or which datum is missing.
+    /// What is compared.
     pub what: &'static str,
+    /// Which datum is missing, where the check is not made.
+    pub missing: Option<&'static str>,
     /// Source of the limit.
     pub citation: Citation,
     /// Whether a failure only costs yield, and endangers nothing.
@@ -98,37 +100,6 @@ impl PvCheck {
     pub fn is_obstacle(&self) -> bool {
         self.outcome == PvOutcome::Failed && !self.only_yield
     }
-
-    /// NaN fails.
-    pub(super) fn made(
-        subject: PvSubject,
-        (value, relation, limit): (f64, PvRelation, f64),
-        unit: &'static str,
-        what: &'static str,
-        citation: Citation,
-    ) -> Self {
-        let held = match relation {
-            PvRelation::AtMost => value <= limit,
-            PvRelation::AtLeast => value >= limit,
-        };
-        let outcome = if held { PvOutcome::Passed } else { PvOutcome::Failed };
-        Self { subject, outcome, value, limit, unit, relation, what, citation, only_yield: false }
-    }
-
-    pub(super) fn missing(
-        subject: PvSubject,
-        relation: PvRelation,
-        unit: &'static str,
-        what: &'static str,
-        citation: Citation,
-    ) -> Self {
-        let outcome = PvOutcome::NotChecked;
-        Self { subject, outcome, value: 0.0, limit: 0.0, unit, relation, what, citation, only_yield: false }
-    }
-
-    pub(super) fn yield_only(self) -> Self {
-        Self { only_yield: true, ..self }
-    }
 }
 
 impl fmt::Display for PvCheck {
@@ -138,11 +109,106 @@ impl fmt::Display for PvCheck {
             PvRelation::AtLeast => "at least",
         };
         let Self { what, value, limit, unit, .. } = *self;
-        match self.outcome {
-            PvOutcome::NotChecked => write!(f, "{what}: not checked"),
-            PvOutcome::Passed | PvOutcome::Failed => {
-                write!(f, "{what}: {} {unit}, {words} {} {unit}", Figures(value), Figures(limit))
+        match self.missing {
+            Some(missing) => write!(f, "{what}: not checked, {missing}"),
+            // Rounded, a failed check must not read as if it passed.
+            None if self.outcome == PvOutcome::Failed && Figures(value).reads_like(limit) => {
+                write!(f, "{what}: {value} {unit}, {words} {limit} {unit}")
             }
+            None => write!(f, "{what}: {} {unit}, {words} {} {unit}", Figures(value), Figures(limit)),
         }
+    }
+}
+
+/// A comparison before its numbers are known.
+#[derive(Clone, Copy)]
+pub(super) struct Compared {
+    pub subject: PvSubject,
+    pub relation: PvRelation,
+    pub unit: &'static str,
+    pub what: &'static str,
+    /// Said where the value is not known.
+    pub no_value: &'static str,
+    /// Said where the limit is not known.
+    pub no_limit: &'static str,
+    pub citation: Citation,
+    pub only_yield: bool,
+}
+
+impl Compared {
+    /// The check of a value against a limit. NaN fails.
+    pub(super) fn made(self, value: Option<f64>, limit: Option<f64>) -> PvCheck {
+        let (outcome, missing) = match (value, limit) {
+            (Some(value), Some(limit)) => {
+                let held = match self.relation {
+                    PvRelation::AtMost => value <= limit,
+                    PvRelation::AtLeast => value >= limit,
+                };
+                (if held { PvOutcome::Passed } else { PvOutcome::Failed }, None)
+            }
+            (None, _) => (PvOutcome::NotChecked, Some(self.no_value)),
+            (_, None) => (PvOutcome::NotChecked, Some(self.no_limit)),
+        };
+        PvCheck {
+            subject: self.subject,
+            outcome,
+            value: value.unwrap_or(0.0),
+            limit: limit.unwrap_or(0.0),
+            unit: self.unit,
+            relation: self.relation,
+            what: self.what,
+            missing,
+            citation: self.citation,
+            only_yield: self.only_yield,
+        }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use super::*;
+    use crate::citation::Seen;
+
+    const COMPARED: Compared = Compared {
+        subject: PvSubject::ShortCircuit,
+        relation: PvRelation::AtMost,
+        unit: "A",
+        what: "current",
+        no_value: "it was not measured",
+        no_limit: "its limit is not stated",
+        citation: Citation::new("a sheet", "", Seen::Stated),
+        only_yield: false,
+    };
+
+    #[test]
+    fn what_is_not_known_never_passes() {
+        for (value, limit, text) in [
+            (None, Some(1.0), "current: not checked, it was not measured"),
+            (Some(1.0), None, "current: not checked, its limit is not stated"),
+            (None, None, "current: not checked, it was not measured"),
+        ] {
+            let check = COMPARED.made(value, limit);
+            assert_eq!((check.outcome, check.to_string().as_str()), (PvOutcome::NotChecked, text));
+            assert!(!check.is_obstacle());
+        }
+        for (value, limit) in [(f64::NAN, 1.0), (1.0, f64::NAN), (1.0 + f64::EPSILON, 1.0)] {
+            assert!(COMPARED.made(Some(value), Some(limit)).is_obstacle(), "{value} {limit}");
+        }
+        let at_least = Compared { relation: PvRelation::AtLeast, ..COMPARED };
+        assert_eq!(at_least.made(Some(1.0), Some(1.0)).outcome, PvOutcome::Passed);
+        assert_eq!(at_least.made(Some(f64::NAN), Some(1.0)).outcome, PvOutcome::Failed);
+        assert!(!Compared { only_yield: true, ..at_least }.made(Some(0.5), Some(1.0)).is_obstacle());
+    }
+
+    #[test]
+    fn a_failure_by_a_hair_does_not_read_as_if_it_passed() {
+        assert_eq!(
+            COMPARED.made(Some(100.001), Some(100.0)).to_string(),
+            "current: 100.001 A, at most 100 A"
+        );
+        assert_eq!(COMPARED.made(Some(15.25), Some(100.0)).to_string(), "current: 15.25 A, at most 100 A");
     }
 }

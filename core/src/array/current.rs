@@ -74,6 +74,37 @@ calculations! {
         isc * (strings - one) * (one + bifacial_gain) * irradiance_factor + back_feed
     }
 
+    /// Most strings in parallel that need no device in each.
+    ///
+    /// # Example
+    /// 9.5 A, modules that bear a fuse of 20 A, nothing from the bank:
+    /// ```
+    /// use ampwright::{array::strings_without_device, quantity::{parse, readable}};
+    /// let most = strings_without_device(parse("9.5 A")?, parse("0 %")?, parse("1.25")?, parse("20 A")?, parse("0 A")?)?;
+    /// assert_eq!(readable(most).to_string(), "2");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn strings_without_device(
+        /// Short-circuit current of one string at standard test conditions.
+        isc: ElectricCurrent in ampere [> 0.0],
+        /// Current added by light from behind, as a part of the front's.
+        bifacial_gain: Ratio in ratio [0.0 ..= 0.5] = 0.0,
+        /// For light brighter than the standard 1000 W/m².
+        irradiance_factor: Ratio in ratio [1.0 ..= 2.0] = 1.25,
+        /// The module's series-fuse rating or the ampacity of the string's conductor, the lower.
+        borne: ElectricCurrent in ampere [> 0.0],
+        /// From the bank through the controller; 0 where that blocks.
+        back_feed: ElectricCurrent in ampere [>= 0.0] = 0.0,
+    ) -> strings: Ratio in ratio
+    formula "n = ⌊(I_borne − I_back)/(Isc·(1 + b)·k_irradiance)⌋ + 1, at least 0; 0: even one string needs it"
+    source "Kirchhoff's current law; the rule: NFPA 70-2023, 690.9(A), IEC 62548:2016, 6.5.3 (recalled)"
+    {
+        let one_string = isc * (Ratio::new::<ratio>(1.0) + bifacial_gain) * irradiance_factor;
+        // The last bit of a quotient must not take a string away.
+        let others = libm::floor(((borne - back_feed) / one_string).value * (1.0 + 1e-12));
+        Ratio::new::<ratio>((others + 1.0).max(0.0))
+    }
+
     /// Least rating of a string's fuse.
     ///
     /// # Example
@@ -81,8 +112,8 @@ calculations! {
     /// ```
     /// use ampwright::{array::string_fuse_least, quantity::{parse, readable}};
     /// let least = |factor| string_fuse_least(parse("9.5 A")?, parse("0 %")?, factor);
-    /// assert_eq!(readable(least(parse("1.5625")?)?).to_string(), "14.8 A");
-    /// assert_eq!(readable(least(parse("1.5")?)?).to_string(), "14.3 A");
+    /// assert_eq!(readable(least(parse("1.5625")?)?).to_string(), "14.84 A");
+    /// assert_eq!(readable(least(parse("1.5")?)?).to_string(), "14.25 A");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn string_fuse_least(

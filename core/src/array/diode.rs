@@ -20,6 +20,9 @@ use crate::quantity::{
 const BOLTZMANN: f64 = 1.380_649e-23;
 const CHARGE: f64 = 1.602_176_634e-19;
 
+/// 0 °C in kelvin: exact by definition.
+pub(super) const ZERO_DEGC_K: f64 = 273.15;
+
 const STEPS: u32 = 100;
 
 /// n·Ns·k·T/q: the voltage over which a diode's current changes by a factor e, for all cells in series.
@@ -40,8 +43,11 @@ pub fn thermal_voltage(
     checked("ideality times cells", ideality_times_cells.value, "", Allowed::AboveUpTo(0.0, 10_000.0))?;
     let celsius = cell.get::<degree_celsius>();
     checked("cell temperature", celsius, "degC", Allowed::Between(-60.0, 150.0))?;
-    let kelvin = celsius + 273.15;
-    Ok(ElectricPotential::new::<volt>(ideality_times_cells.value * BOLTZMANN * kelvin / CHARGE))
+    Ok(ElectricPotential::new::<volt>(thermal_volts(ideality_times_cells.value, celsius)))
+}
+
+pub(super) fn thermal_volts(ideality_times_cells: f64, celsius: f64) -> f64 {
+    ideality_times_cells * BOLTZMANN * (celsius + ZERO_DEGC_K) / CHARGE
 }
 
 /// The five parameters of a single-diode curve.
@@ -139,14 +145,14 @@ impl SingleDiode {
     pub fn voltage(&self, current: ElectricCurrent) -> Result<ElectricPotential, Error> {
         let amps = current.get::<ampere>();
         checked("current", amps, "A", Allowed::Between(-1e6, 1e6))?;
-        match self.voltage_at(amps) {
-            Some(volts) => Ok(ElectricPotential::new::<volt>(volts)),
-            None => {
-                let allowed =
-                    Allowed::Words("less than the photocurrent, since no shunt resistance is stated");
-                Err(Error::OutOfRange { name: "current", value: amps, unit: "A", allowed })
-            }
-        }
+        let allowed = Allowed::Words("less than what the light gives, since no shunt resistance is stated");
+        let volts = self.voltage_at(amps).ok_or(Error::OutOfRange {
+            name: "current",
+            value: amps,
+            unit: "A",
+            allowed,
+        })?;
+        Ok(ElectricPotential::new::<volt>(volts))
     }
 
     /// Voltage without load.
@@ -199,13 +205,7 @@ impl SingleDiode {
 
     /// Current at a voltage, A and V; any finite voltage.
     pub(super) fn current_at(&self, volts: f64) -> f64 {
-        let u = self.junction_at_voltage(volts);
-        // Of two ways to the current, the one that does not subtract large numbers.
-        if self.series > 0.0 && u > volts + self.series * self.photo * 0.5 {
-            (u - volts) / self.series
-        } else {
-            self.junction_current(u)
-        }
+        self.junction_current(self.junction_at_voltage(volts))
     }
 
     /// u at a voltage: root of u + Rs·(I₀·(e^(u/a) − 1) + G·u) = V + Rs·Iph, rising and convex.
@@ -246,12 +246,17 @@ impl SingleDiode {
             let over = slope * u + scale * libm::expm1(u / a) - target;
             let steep = slope + scale / a * libm::exp(u / a);
             let step = over / steep;
-            if !(step > 0.0) || u - step == u {
+            if step.is_nan() || step <= 0.0 || u - step == u {
                 break;
             }
             u -= step;
         }
         u
+    }
+
+    pub(super) fn maximum_power(&self) -> f64 {
+        let (volts, amps) = self.maximum();
+        volts * amps
     }
 
     /// Voltage and current at maximum power.
@@ -272,5 +277,132 @@ impl SingleDiode {
         }
         let i = self.junction_current(low);
         ((low - i * self.series).max(0.0), i.max(0.0))
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use proptest::prelude::*;
+
+    use super::*;
+
+    fn curve(photo: f64, saturation: f64, series: f64, leak: f64, thermal: f64) -> SingleDiode {
+        SingleDiode { photo, saturation, series, leak, thermal }
+    }
+
+    prop_compose! {
+        /// From a cell in dim light to an array of hundreds of modules.
+        fn any_curve()(
+            photo in 0.0..200.0f64,
+            saturation in -14.0..-3.0f64,
+            series in -6.0..1.0f64,
+            leak in -9.0..0.0f64,
+            thermal in 0.02..40.0f64,
+        ) -> SingleDiode {
+            let ten = |x: f64| libm::pow(10.0, x);
+            curve(photo, ten(saturation), ten(series), ten(leak), thermal)
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn the_current_solves_the_implicit_equation(c in any_curve(), part in -2.0..1.5f64) {
+            let volts = part * c.open_circuit_voltage().value;
+            let i = c.current_at(volts);
+            let u = volts + i * c.series;
+            let right = c.photo - c.saturation * libm::expm1(u / c.thermal) - c.leak * u;
+            // What the last bit of u moves on the right side, and the last bit of each term.
+            let bits = (u.abs() + volts.abs() + c.series * c.photo) * c.slope(u) + c.photo + i.abs();
+            prop_assert!((i - right).abs() <= 1e-13 * (1.0 + c.series * c.slope(u)) * bits, "{i} {right}");
+        }
+
+        #[test]
+        fn voltage_and_current_are_inverse(c in any_curve(), part in 0.0..1.2f64) {
+            let volts = part * c.open_circuit_voltage().value;
+            let amps = c.current_at(volts);
+            let back = c.voltage_at(amps).unwrap();
+            // A flat curve tells little about its voltage: the last bit of the current over the slope.
+            let slope = c.slope(volts + amps * c.series);
+            let bits = volts.abs() + c.series * (c.photo + amps.abs()) + (c.photo + amps.abs()) / slope;
+            prop_assert!((back - volts).abs() <= 1e-12 * bits, "{back} {volts}");
+        }
+
+        #[test]
+        fn current_falls_with_voltage_and_no_point_beats_the_maximum(c in any_curve()) {
+            let points = c.key_points();
+            let voc = points.voc.value;
+            let mut last = f64::INFINITY;
+            for k in 0..=200 {
+                let volts = voc * f64::from(k) / 200.0;
+                let amps = c.current_at(volts);
+                prop_assert!(amps <= last + 1e-12 * c.photo);
+                last = amps;
+                prop_assert!(volts * amps <= points.power().value * (1.0 + 1e-9) + 1e-12, "{volts} V");
+            }
+            prop_assert!(points.vmp <= points.voc && points.imp.value <= points.isc.value + 1e-12 * c.photo);
+        }
+
+        #[test]
+        fn an_array_is_so_many_volts_and_amperes_more(c in any_curve(), n in 1..40u16, m in 1..40u16) {
+            let (one, all) = (c.key_points(), c.array(n, m).unwrap().key_points());
+            let (n, m) = (f64::from(n), f64::from(m));
+            prop_assert!((all.voc.value - n * one.voc.value).abs() <= 1e-9 * all.voc.value);
+            prop_assert!((all.isc.value - m * one.isc.value).abs() <= 1e-9 * all.isc.value);
+            prop_assert!((all.power().value - n * m * one.power().value).abs() <= 1e-9 * all.power().value);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(a: u64, b: u64, c: u64, d: u64, e: u64, v: u64) {
+            let f = f64::from_bits;
+            let made = SingleDiode::new(DiodeParameters {
+                photocurrent: ElectricCurrent::new::<ampere>(f(a)),
+                saturation: ElectricCurrent::new::<ampere>(f(b)),
+                series: ElectricalResistance::new::<ohm>(f(c)),
+                shunt: Some(ElectricalResistance::new::<ohm>(f(d))),
+                thermal: ElectricPotential::new::<volt>(f(e)),
+            });
+            if let Ok(curve) = made {
+                let _ = curve.key_points();
+                let _ = curve.current(ElectricPotential::new::<volt>(f(v)));
+                let _ = curve.voltage(ElectricCurrent::new::<ampere>(f(v)));
+            }
+        }
+    }
+
+    /// Without losses open circuit is a·ln(1 + Iph/I₀), in closed form.
+    #[test]
+    fn open_circuit_of_an_ideal_diode_is_a_logarithm() {
+        for photo in [1e-6, 0.1, 4.0, 13.0] {
+            let voc = curve(photo, 1e-10, 0.0, 0.0, 0.0257).open_circuit_voltage().value;
+            assert!((voc - 0.0257 * libm::log1p(photo / 1e-10)).abs() < 1e-15);
+        }
+    }
+
+    #[test]
+    fn in_the_dark_there_is_nothing() {
+        let points = curve(0.0, 1e-9, 0.3, 0.0, 1.0).key_points();
+        assert_eq!((points.voc.value, points.isc.value, points.power().value), (0.0, 0.0, 0.0));
+        assert_eq!(points.fill_factor().value, 0.0);
+    }
+
+    #[test]
+    fn a_diode_without_leak_blocks_what_the_light_does_not_give() {
+        let c = curve(5.0, 1e-9, 0.3, 0.0, 1.0);
+        assert_eq!(
+            c.voltage(ElectricCurrent::new::<ampere>(5.1)).unwrap_err().to_string(),
+            "current is 5.1 A; it must be less than what the light gives, since no shunt resistance is stated"
+        );
+        assert!(c.voltage(ElectricCurrent::new::<ampere>(f64::NAN)).is_err());
+        assert!(c.current(ElectricPotential::new::<volt>(f64::INFINITY)).is_err());
+    }
+
+    #[test]
+    fn parameters_come_back() {
+        let c = curve(5.0, 1e-9, 0.3, 0.004, 1.0);
+        assert_eq!(SingleDiode::new(c.parameters()), Ok(c));
+        assert!(c.array(0, 1).is_err() && c.array(1, 0).is_err());
     }
 }

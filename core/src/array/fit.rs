@@ -115,3 +115,68 @@ fn through(points: Points, thermal: f64, series: f64) -> Option<SingleDiode> {
     let curve = SingleDiode { photo, saturation, series, leak, thermal };
     [photo, saturation, leak].iter().all(|p| p.is_finite()).then_some(curve)
 }
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+
+    use super::*;
+
+    fn points_of(curve: &SingleDiode) -> Points {
+        let key = curve.key_points();
+        Points { voc: key.voc.value, isc: key.isc.value, vmp: key.vmp.value, imp: key.imp.value }
+    }
+
+    fn near(a: f64, b: f64, tolerance: f64) -> bool {
+        (a - b).abs() <= tolerance * b.abs()
+    }
+
+    proptest! {
+        /// Parameters → key points → parameters: the fit is the inverse of the solver.
+        #[test]
+        fn a_curve_is_found_again_from_its_points(
+            photo in 0.3..14.0f64,
+            cells in 1.0..144.0f64,
+            ideality in 0.8..1.6f64,
+            voc_cell in 0.55..0.72f64,
+            series in 0.001..0.06f64,
+            leak in 0.0..0.02f64,
+        ) {
+            let thermal = ideality * cells * 0.0257;
+            let voc = voc_cell * cells;
+            let saturation = photo * (1.0 - leak) / libm::expm1(voc / thermal);
+            // Series resistance and leak as parts of Voc/Isc and Isc/Voc.
+            let curve = SingleDiode { photo, saturation, series: series * voc / photo, leak: leak * photo / voc, thermal };
+            let again = with_thermal(points_of(&curve), thermal).unwrap();
+            prop_assert!(near(again.series, curve.series, 1e-4), "{again:?} {curve:?}");
+            prop_assert!(near(again.photo, photo, 1e-6) && near(again.saturation, saturation, 1e-3));
+            prop_assert!((again.leak - curve.leak).abs() < 1e-4 * photo / voc);
+        }
+
+        /// Any plausible sheet: the curve goes through its four points, and its maximum is there.
+        #[test]
+        fn the_fitted_curve_goes_through_the_points(
+            voc in 5.0..60.0f64, isc in 0.3..18.0f64, v in 0.72..0.86f64, i in 0.85..0.97f64, cells in 0.55..0.75f64,
+        ) {
+            let points = Points { voc, isc, vmp: v * voc, imp: i * isc };
+            let curve = greatest(points, IDEALITY * 0.0257 * voc / cells).unwrap();
+            let found = points_of(&curve);
+            prop_assert!(near(found.voc, voc, 1e-9) && near(found.isc, isc, 1e-9));
+            prop_assert!(near(curve.current_at(points.vmp), points.imp, 1e-9));
+            prop_assert!(near(found.vmp * found.imp, points.vmp * points.imp, 1e-9), "{found:?}");
+            prop_assert!(curve.series >= 0.0 && curve.leak >= 0.0 && curve.saturation > 0.0);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(a: u64, b: u64, c: u64, d: u64, e: u64) {
+            let f = f64::from_bits;
+            let _ = greatest(Points { voc: f(a), isc: f(b), vmp: f(c), imp: f(d) }, f(e));
+        }
+    }
+
+    impl core::fmt::Debug for Points {
+        fn fmt(&self, f: &mut core::fmt::Formatter<'_>) -> core::fmt::Result {
+            write!(f, "{} V {} A, {} V {} A", self.voc, self.isc, self.vmp, self.imp)
+        }
+    }
+}

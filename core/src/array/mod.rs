@@ -13,10 +13,17 @@ mod fit;
 mod layout;
 mod module;
 mod need;
+mod points;
 mod shade;
+mod string_checks;
 mod strings;
 mod sun;
 mod temperature;
+
+#[cfg(test)]
+mod sample;
+#[cfg(test)]
+mod string_tests;
 
 pub use check::{Cited, PvCheck, PvOutcome, PvRelation, PvSubject};
 pub use current::*;
@@ -25,6 +32,7 @@ pub use diode::{DiodeParameters, SingleDiode, thermal_voltage};
 pub use layout::{Exposure, Layout, LayoutTrial, Layouts, Preference, layouts};
 pub use module::{Conditions, KeyPoints, Module, ModuleSheet};
 pub use need::*;
+pub use points::*;
 pub use shade::{ShadeCase, Shaded, shade};
 pub use strings::{
     ArrayCurrents, ColdBasis, InputLimits, PvFactors, Regulation, StringDevice, StringQuestion,
@@ -36,4 +44,5 @@ pub use temperature::*;
 use crate::catalogue::Entry;
 
 /// Every calculation of this room, by file.
-pub const CATALOGUE: &[&[Entry]] = &[temperature::ENTRIES, current::ENTRIES, sun::ENTRIES, need::ENTRIES];
+pub const CATALOGUE: &[&[Entry]] =
+    &[temperature::ENTRIES, current::ENTRIES, sun::ENTRIES, need::ENTRIES, points::ENTRIES];

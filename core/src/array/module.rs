@@ -286,3 +286,104 @@ pub(super) fn checked(
     };
     if held { Ok(()) } else { Err(Error::OutOfRange { name, value, unit, allowed }) }
 }
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::array::sample::{q, sheet};
+
+    fn refused(change: impl Fn(&mut ModuleSheet)) -> std::string::String {
+        let mut changed = sheet();
+        change(&mut changed);
+        Module::new(changed).unwrap_err().to_string()
+    }
+
+    #[test]
+    fn what_cannot_be_true_together_is_named() {
+        assert!(Module::new(sheet()).is_ok());
+        assert_eq!(
+            refused(|s| core::mem::swap(&mut s.points.voc, &mut s.points.vmp)),
+            "vmp is 22.5 V; it must be below voc; look whether the two are exchanged"
+        );
+        assert_eq!(
+            refused(|s| core::mem::swap(&mut s.points.isc, &mut s.points.imp)),
+            "imp is 6.1 A; it must be below isc; look whether the two are exchanged"
+        );
+        // 5 % of 100.07 W.
+        assert_eq!(
+            refused(|s| s.power = q("105.1 W")),
+            "power is 105.1 W; it must be within 5 % of vmp times imp"
+        );
+        assert_eq!(refused(|s| s.power = q("95 W")), "power is 95 W; it must be within 5 % of vmp times imp");
+        let mut edge = sheet();
+        edge.power = q("105 W");
+        assert!(Module::new(edge).is_ok());
+        assert_eq!(
+            refused(|s| (s.points.vmp, s.power) = (q("6 V"), q("32.28 W"))),
+            "vmp is 6 V; with imp it gives a fill factor that no diode has; look for a misprint"
+        );
+        assert_eq!(
+            refused(|s| s.system_voltage = Some(q("20 V"))),
+            "voc is 22.5 V; it is above the module's own system_voltage"
+        );
+    }
+
+    #[test]
+    fn a_coefficient_per_volt_or_in_percent_is_out_of_range() {
+        // −0.3 %/K entered as −0.3 /K.
+        assert_eq!(
+            refused(|s| s.voc_coefficient = Some(q("-0.3 /K"))),
+            "voc_coefficient is -0.3 /K; it must be between -0.01 and 0"
+        );
+        assert_eq!(
+            refused(|s| s.power_coefficient = Some(q("0.4 %/K"))),
+            "power_coefficient is 0.004 /K; it must be between -0.01 and 0"
+        );
+        assert!(refused(|s| s.bifacial_gain = q("70 %")).starts_with("bifacial_gain is 0.7"));
+        assert!(refused(|s| s.cells = Some(0)).starts_with("cells is 0"));
+    }
+
+    #[test]
+    fn the_voltage_at_maximum_power_has_its_coefficient_from_power_or_from_open_circuit() {
+        let of = |sheet| Module::new(sheet).unwrap().vmp_coefficient().map(|c| c.get::<per_kelvin>());
+        assert!((of(sheet()).unwrap() - (-0.004 - 0.0005)).abs() < 1e-15);
+        // As many volts per kelvin as open circuit: −0.3 % of 22.5 V.
+        let without = ModuleSheet { power_coefficient: None, ..sheet() };
+        assert!((of(without).unwrap() * 18.6 - (-0.003 * 22.5)).abs() < 1e-15);
+        assert_eq!(of(ModuleSheet { voc_coefficient: None, ..without }), None);
+    }
+
+    #[test]
+    fn what_is_not_stated_is_named_as_practice() {
+        let bare = Module::new(ModuleSheet::plain(sheet().power, sheet().points)).unwrap();
+        assert_eq!((bare.noct().1.seen, bare.isc_coefficient().1.seen), (Seen::Practice, Seen::Practice));
+        let full = Module::new(sheet()).unwrap();
+        assert_eq!((full.noct().1.seen, full.isc_coefficient().1.seen), (Seen::Stated, Seen::Stated));
+    }
+
+    proptest! {
+        #[test]
+        fn any_bits_are_a_module_or_an_error(bits in prop::array::uniform9(any::<u64>())) {
+            let [a, b, c, d, e, f, g, h, i] = bits.map(f64::from_bits);
+            let points = KeyPoints {
+                voc: ElectricPotential::new::<volt>(a),
+                isc: ElectricCurrent::new::<ampere>(b),
+                vmp: ElectricPotential::new::<volt>(c),
+                imp: ElectricCurrent::new::<ampere>(d),
+            };
+            let sheet = ModuleSheet {
+                voc_coefficient: Some(RatioPerTemperature::new::<per_kelvin>(f)),
+                noct: Some(ThermodynamicTemperature::new::<degree_celsius>(g)),
+                series_fuse: Some(ElectricCurrent::new::<ampere>(h)),
+                bifacial_gain: Ratio::new::<ratio>(i),
+                ..ModuleSheet::plain(Power::new::<watt>(e), points)
+            };
+            prop_assert!(Module::new(sheet).is_err(), "random bits are no plausible module");
+        }
+    }
+}

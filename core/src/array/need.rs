@@ -97,7 +97,7 @@ pub struct ArraySteps {
     pub in_series: u32,
     /// Modules in all.
     pub modules: u32,
-    /// Ratio that is reached in the worst month.
+    /// Ratio that is reached in the worst month; 0 where there is no demand.
     pub reached: Ratio,
 }
 
@@ -139,7 +139,7 @@ pub struct EnergySteps {
     pub strings: u32,
     /// Modules in all: whole strings.
     pub modules: u32,
-    /// Ratio that is reached in the worst month.
+    /// Ratio that is reached in the worst month; 0 where there is no demand.
     pub reached: Ratio,
 }
 
@@ -150,6 +150,26 @@ const MOST: f64 = 1e6;
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a need outside its ranges, or one that asks for more than a million strings.
+///
+/// # Example
+/// 40 Ah on every day of the year, and a dark December:
+/// ```
+/// use ampwright::array::{ArrayNeed, NeedMonth, array_need};
+/// use ampwright::quantity::parse;
+/// let mut months = [NeedMonth { demand: parse("40 Ah")?, sun_hours: parse("3.4 h")? }; 12];
+/// months[11].sun_hours = parse("1.1 h")?;
+/// let steps = array_need(&ArrayNeed {
+///     months,
+///     array_to_load: parse("1.2")?,
+///     losses: parse("10 %")?,
+///     charge_efficiency: parse("95 %")?,
+///     imp: parse("5.38 A")?,
+///     module_hot_voltage: parse("14.5 V")?,
+///     string_voltage: parse("15.6 V")?,
+/// })?;
+/// assert_eq!((steps.worst_month, steps.strings, steps.in_series, steps.modules), (11, 10, 2, 20));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn array_need(need: &ArrayNeed) -> Result<ArraySteps, Error> {
     let imp = need.imp.get::<uom::si::electric_current::ampere>();
     checked("imp", imp, "A", Allowed::AboveUpTo(0.0, 100.0))?;
@@ -165,6 +185,12 @@ pub fn array_need(need: &ArrayNeed) -> Result<ArraySteps, Error> {
     let (in_series_exact, in_series) = count("modules in series", string / one)?;
     let (_, modules) = count("modules", f64::from(strings) * f64::from(in_series))?;
     let demand = ElectricCharge::new::<ampere_hour>(demand);
+    let r = Ratio::new::<ratio>;
+    let reached = if demand.value > 0.0 {
+        array_to_load_ratio::formula(need.imp, r(f64::from(strings)), sun_hours, r(1.0 - kept), demand)
+    } else {
+        r(0.0)
+    };
     Ok(ArraySteps {
         worst_month,
         demand,
@@ -176,13 +202,7 @@ pub fn array_need(need: &ArrayNeed) -> Result<ArraySteps, Error> {
         in_series_exact,
         in_series,
         modules,
-        reached: array_to_load_ratio::formula(
-            need.imp,
-            Ratio::new::<ratio>(f64::from(strings)),
-            sun_hours,
-            Ratio::new::<ratio>(1.0 - kept),
-            demand,
-        ),
+        reached,
     })
 }
 
@@ -190,6 +210,26 @@ pub fn array_need(need: &ArrayNeed) -> Result<ArraySteps, Error> {
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a need outside its ranges, or one that asks for more than a million modules.
+///
+/// # Example
+/// 500 Wh on every day of the year, and a dark December:
+/// ```
+/// use ampwright::array::{EnergyNeed, NeedMonth, energy_need};
+/// use ampwright::quantity::parse;
+/// let mut months = [NeedMonth { demand: parse("500 Wh")?, sun_hours: parse("3.4 h")? }; 12];
+/// months[11].sun_hours = parse("1.1 h")?;
+/// let steps = energy_need(&EnergyNeed {
+///     months,
+///     array_to_load: parse("1.2")?,
+///     losses: parse("10 %")?,
+///     controller_efficiency: parse("95 %")?,
+///     charge_efficiency: parse("95 %")?,
+///     module_power: parse("100 W")?,
+///     in_series: 2,
+/// })?;
+/// assert_eq!((steps.worst_month, steps.strings, steps.modules), (11, 4, 8));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn energy_need(need: &EnergyNeed) -> Result<EnergySteps, Error> {
     let power = need.module_power.get::<uom::si::power::watt>();
     checked("module_power", power, "W", Allowed::AboveUpTo(0.0, 5000.0))?;
@@ -293,5 +333,171 @@ calculations! {
         let exact = demand * array_to_load / ((one - losses) * sun_hours * imp);
         let strings = Ratio::new::<ratio>(libm::ceil(exact.value * (1.0 - 1e-12)));
         ArrayModules { strings_exact: exact, strings, modules: strings * in_series }
+    }
+
+    /// Power of an array for one month, in watt-hours.
+    ///
+    /// For a controller that holds the array at maximum power. [`energy_need()`] finds the worst of twelve months.
+    ///
+    /// # Example
+    /// 1 kWh a day, 3.1 sun-hours, ratio 1.2, a tenth lost, controller 95 %, bank 90 %:
+    /// ```
+    /// use ampwright::{array::array_power, quantity::{parse, readable}};
+    /// let power = array_power(parse("1 kWh")?, parse("3.1 h")?, parse("1.2")?, parse("10 %")?, parse("95 %")?, parse("90 %")?)?;
+    /// assert_eq!(readable(power).to_string(), "503 W");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn array_power(
+        /// Taken from the bank on an average day of the month.
+        demand: Energy in watt_hour [>= 0.0],
+        /// Of an average day, in the plane of the array.
+        sun_hours: Time in hour [> 0.0 ..= 24.0],
+        /// 1.1 to 1.2 for loads whose failure is borne, 1.3 to 1.4 for critical ones.
+        array_to_load: Ratio in ratio [1.0 ..= 5.0] = 1.2,
+        /// Part lost to heat, dirt, mismatch and wiring.
+        losses: Ratio in ratio [0.0 ..= 0.9] = 0.1,
+        /// Of the controller.
+        controller_efficiency: Ratio in ratio [> 0.0 ..= 1.0] = 0.95,
+        /// Part of the energy that the bank stores.
+        charge_efficiency: Ratio in ratio [> 0.0 ..= 1.0],
+    ) -> power: Power in watt
+    formula "P = W·r/((1 − l)·η_controller·η_charge·t)"
+    source "IEEE 1562-2007 in the form of energy (recalled); the default efficiency is common practice, no source"
+    {
+        let kept = (Ratio::new::<ratio>(1.0) - losses) * controller_efficiency * charge_efficiency;
+        demand * array_to_load / (kept * sun_hours)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::{electric_current::ampere, power::watt};
+
+    use super::*;
+    use crate::array::sample::q;
+
+    const SUN: [f64; 12] = [1.4, 2.3, 3.4, 4.6, 5.2, 5.4, 5.1, 4.5, 3.6, 2.4, 1.5, 1.1];
+
+    fn months<D: Copy>(demand: [D; 12]) -> [NeedMonth<D>; 12] {
+        core::array::from_fn(|k| NeedMonth { demand: demand[k], sun_hours: Time::new::<hour>(SUN[k]) })
+    }
+
+    fn need(demand: [f64; 12]) -> ArrayNeed {
+        ArrayNeed {
+            months: months(demand.map(ElectricCharge::new::<ampere_hour>)),
+            array_to_load: q("1.2"),
+            losses: q("10 %"),
+            charge_efficiency: q("95 %"),
+            imp: q("5.38 A"),
+            module_hot_voltage: q("14.5 V"),
+            string_voltage: q("31.2 V"),
+        }
+    }
+
+    fn energy(demand: f64) -> EnergyNeed {
+        EnergyNeed {
+            months: months([Energy::new::<watt_hour>(demand); 12]),
+            array_to_load: q("1.2"),
+            losses: q("10 %"),
+            controller_efficiency: q("95 %"),
+            charge_efficiency: q("90 %"),
+            module_power: q("85 W"),
+            in_series: 3,
+        }
+    }
+
+    #[test]
+    fn the_darkest_month_decides_unless_its_demand_is_small() {
+        let steps = array_need(&need([40.0; 12])).unwrap();
+        assert_eq!(steps.worst_month, 11);
+        // 40 × 1.2 / 0.855 = 56.14 Ah against 5.38 × 1.1 = 5.918 Ah: 9.49 strings; 31.2 V of 14.5 V: three in series.
+        assert!((steps.array_charge.get::<ampere_hour>() - 48.0 / 0.855).abs() < 1e-9);
+        assert!((steps.strings_exact - 48.0 / 0.855 / 5.918).abs() < 1e-9);
+        assert_eq!((steps.strings, steps.in_series, steps.modules), (10, 3, 30));
+        assert!((steps.reached.value - 59.18 * 0.855 / 40.0).abs() < 1e-9);
+        // Closed in winter, the cabin's worst month is April against its sun: 40/4.6 is more than 2/1.1.
+        let mut seasonal = [40.0; 12];
+        for month in [0, 1, 2, 9, 10, 11] {
+            seasonal[month] = 2.0;
+        }
+        assert_eq!(array_need(&need(seasonal)).unwrap().worst_month, 8);
+    }
+
+    #[test]
+    fn a_month_without_demand_needs_nothing() {
+        let steps = array_need(&need([0.0; 12])).unwrap();
+        assert_eq!((steps.strings, steps.modules), (0, 0));
+        assert_eq!(steps.reached.value, 0.0);
+        let steps = energy_need(&energy(0.0)).unwrap();
+        assert_eq!((steps.strings, steps.modules), (0, 0));
+    }
+
+    /// Both forms of one plant: a module of 85 W that is held at 15.8 V stands for 5.38 A.
+    #[test]
+    fn energy_and_charge_ask_for_the_same_array() {
+        let volts = 85.0 / 5.38;
+        let mut by_charge = need([40.0; 12]);
+        by_charge.module_hot_voltage = ElectricPotential::new::<volt>(volts);
+        by_charge.string_voltage = ElectricPotential::new::<volt>(volts);
+        let mut by_energy = energy(40.0 * volts);
+        by_energy.controller_efficiency = q("1");
+        by_energy.charge_efficiency = q("95 %");
+        by_energy.in_series = 1;
+        let (a, b) = (array_need(&by_charge).unwrap(), energy_need(&by_energy).unwrap());
+        assert!((a.strings_exact - b.modules_exact).abs() < 1e-9);
+        assert_eq!((a.modules, a.worst_month), (b.modules, b.worst_month));
+        assert!((a.reached.value - b.reached.value).abs() < 1e-9);
+    }
+
+    #[test]
+    fn whole_strings_only() {
+        let steps = energy_need(&energy(1000.0)).unwrap();
+        // 1200/0.7695/1.1/85 = 16.68: 17 modules make 6 strings of 3.
+        assert!((steps.modules_exact - 1200.0 / 0.7695 / 1.1 / 85.0).abs() < 1e-9);
+        assert_eq!((steps.strings, steps.modules), (6, 18));
+        assert!((steps.array_power.get::<watt>() - 85.0 * steps.modules_exact).abs() < 1e-9);
+    }
+
+    #[test]
+    fn a_quotient_that_is_whole_is_not_rounded_up_by_its_last_bit() {
+        for strings in 1..=50_u32 {
+            let mut exact = need([40.0; 12]);
+            let current = 48.0 / 0.855 / 1.1 / f64::from(strings);
+            exact.imp = ElectricCurrent::new::<ampere>(current);
+            assert_eq!(array_need(&exact).unwrap().strings, strings);
+        }
+    }
+
+    proptest! {
+        /// What is reached is never below what was asked, and one string less would be.
+        #[test]
+        fn as_many_strings_as_needed_and_no_more(demand in prop::array::uniform12(0.1..500.0f64), imp in 0.3..18.0f64) {
+            let asked = ArrayNeed { imp: ElectricCurrent::new::<ampere>(imp), ..need(demand) };
+            let steps = array_need(&asked).unwrap();
+            let each = steps.reached.value / f64::from(steps.strings);
+            prop_assert!(steps.reached.value >= 1.2 * (1.0 - 1e-9));
+            prop_assert!(steps.reached.value - each < 1.2);
+            for (k, demand) in demand.iter().enumerate() {
+                let reached = f64::from(steps.strings) * imp * SUN[k] * 0.855 / demand;
+                prop_assert!(reached >= steps.reached.value * (1.0 - 1e-9), "month {k}");
+            }
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(bits in prop::array::uniform6(any::<u64>())) {
+            let [a, b, c, d, e, f] = bits.map(f64::from_bits);
+            let mut asked = need([a; 12]);
+            asked.imp = ElectricCurrent::new::<ampere>(b);
+            asked.array_to_load = Ratio::new::<ratio>(c);
+            asked.losses = Ratio::new::<ratio>(d);
+            asked.module_hot_voltage = ElectricPotential::new::<volt>(e);
+            asked.months[3].sun_hours = Time::new::<hour>(f);
+            let _ = array_need(&asked);
+            let mut asked = energy(a);
+            asked.module_power = Power::new::<watt>(b);
+            asked.months[3].sun_hours = Time::new::<hour>(f);
+            let _ = energy_need(&asked);
+        }
     }
 }

@@ -2,27 +2,25 @@
 
 use arrayvec::ArrayVec;
 use uom::si::{
-    electric_current::ampere, electric_potential::volt, power::watt, ratio::ratio,
+    electric_current::ampere, electric_potential::volt, ratio::ratio,
     thermodynamic_temperature::degree_celsius,
 };
 
-use super::check::{Cited, PvCheck, PvOutcome, PvRelation, PvSubject};
+use super::check::{Cited, PvCheck, PvOutcome};
 use super::layout::Layout;
-use super::module::{Module, PRACTICE, SHEET, checked};
+use super::module::{Module, checked};
+use super::string_checks;
 use super::{
     array_current_design, open_circuit_voltage_cold, operating_voltage_hot, string_fault_current,
     string_fuse_least,
 };
-use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
 use crate::quantity::{ElectricCurrent, ElectricPotential, Ratio, ThermodynamicTemperature};
 
 /// The most checks that one arrangement gives.
-const CHECKS: usize = 24;
+pub(super) const CHECKS: usize = 24;
 /// The most further parts that a cold voltage is held against.
 const PARTS: usize = 8;
-
-const RULE: Citation = Citation::new("design rule", "R10", Seen::Practice);
 
 /// How a controller holds its array.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -87,6 +85,22 @@ pub enum StringDevice {
     Rated(ElectricCurrent),
     /// One is chosen later, where it is required.
     ToChoose,
+}
+
+impl InputLimits {
+    /// Nothing but the kind of regulation is stated.
+    pub const fn unknown(regulation: Regulation) -> Self {
+        Self {
+            regulation,
+            greatest_voltage: None,
+            window_low: None,
+            window_high: None,
+            start_margin: None,
+            short_circuit_current: None,
+            input_current: None,
+            output_current: None,
+        }
+    }
 }
 
 /// Everything that strings are held against.
@@ -260,7 +274,7 @@ impl StringQuestion<'_> {
     }
 }
 
-/// Voltages of a string of so many modules, cold and hot.
+/// Voltages of a string of so many modules, cold and hot. [`check_strings`] has an example.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges.
@@ -292,7 +306,7 @@ pub fn string_voltages(question: &StringQuestion<'_>, in_series: u16) -> Result<
     })
 }
 
-/// Currents of so many strings in parallel.
+/// Currents of so many strings in parallel. [`check_strings`] has an example of a question.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges.
@@ -337,279 +351,59 @@ pub fn array_currents(question: &StringQuestion<'_>, in_parallel: u16) -> Result
 /// # Errors
 /// [`Error::OutOfRange`] for a count of 0 or a question outside its ranges, [`Error::WrongCount`] for more than eight
 /// further parts. A check that fails, or lacks a datum, is no error.
+///
+/// # Example
+/// ```
+/// # use ampwright::array::*;
+/// # use ampwright::{quantity::parse, rules::Rules};
+/// # let points = KeyPoints { voc: parse("22.5 V")?, isc: parse("6.1 A")?, vmp: parse("18.6 V")?, imp: parse("5.38 A")? };
+/// # let module = Module::new(ModuleSheet {
+/// #     voc_coefficient: Some(parse("-0.3 %/K")?),
+/// #     power_coefficient: Some(parse("-0.4 %/K")?),
+/// #     series_fuse: Some(parse("15 A")?),
+/// #     system_voltage: Some(parse("600 V")?),
+/// #     ..ModuleSheet::plain(parse("100 W")?, points)
+/// # })?;
+/// let rules = Rules::named("us")?.pv();
+/// let question = StringQuestion {
+///     module: &module, // 100 W: 22.5 V, 6.1 A
+///     input: InputLimits {
+///         greatest_voltage: Some(parse("100 V")?),
+///         start_margin: Some(parse("5 V")?),
+///         short_circuit_current: Some(parse("35 A")?),
+///         output_current: Some(parse("30 A")?),
+///         ..InputLimits::unknown(Regulation::Tracking)
+///     },
+///     coldest: parse("-20 degC")?,
+///     hottest_cell: parse("70 degC")?,
+///     cold_factor: rules.cold_factor(parse("-20 degC")?).ok(),
+///     bank_nominal: parse("12 V")?,
+///     bank_highest: parse("15.6 V")?,
+///     drop: parse("2 %")?,
+///     ageing: parse("0 %")?,
+///     factors: rules.factors(),
+///     device: StringDevice::ToChoose,
+///     ampacity: None,
+///     back_feed: Some(parse("0 A")?),
+///     parts: &[],
+/// };
+/// let four = check_strings(&question, Layout { in_series: 4, in_parallel: 1 })?;
+/// assert_eq!(
+///     four.obstacle().unwrap().to_string(),
+///     "cold open-circuit voltage against the controller's greatest input voltage: 102.2 V, at most 100 V"
+/// );
+/// let three = check_strings(&question, Layout { in_series: 3, in_parallel: 2 })?;
+/// assert!(three.obstacle().is_none());
+/// assert_eq!(three.device_required, Some(false));
+/// # Ok::<(), ampwright::Error>(())
+/// ```
 pub fn check_strings(question: &StringQuestion<'_>, layout: Layout) -> Result<StringsChecked, Error> {
     let voltages = string_voltages(question, layout.in_series)?;
     let currents = array_currents(question, layout.in_parallel)?;
     let mut checks = ArrayVec::new();
-    cold(question, &voltages, &mut checks);
-    hot(question, &voltages, &mut checks);
-    input_current(question, layout, &currents, &mut checks);
-    let device_required = string_device(question, &currents, &mut checks);
+    string_checks::cold(question, &voltages, &mut checks);
+    string_checks::hot(question, &voltages, &mut checks);
+    string_checks::input(question, layout, &currents, &mut checks);
+    let device_required = string_checks::string_device(question, &currents, &mut checks);
     Ok(StringsChecked { layout, voltages, currents, device_required, checks })
 }
-
-type Checks = ArrayVec<PvCheck, CHECKS>;
-
-/// Cold open circuit against every part, cold maximum power against the window's upper end.
-fn cold(question: &StringQuestion<'_>, voltages: &StringVoltages, checks: &mut Checks) {
-    let no_coefficient = "cold open-circuit voltage: neither the module's coefficient nor a factor is stated";
-    let mut against = |subject, limit: Option<ElectricPotential>, what, missing, citation| {
-        checks.push(match (voltages.cold_voc, limit) {
-            (Some((value, _)), Some(limit)) => {
-                let numbers = (value.get::<volt>(), PvRelation::AtMost, limit.get::<volt>());
-                PvCheck::made(subject, numbers, "V", what, citation)
-            }
-            (None, _) => PvCheck::missing(subject, PvRelation::AtMost, "V", no_coefficient, citation),
-            (_, None) => PvCheck::missing(subject, PvRelation::AtMost, "V", missing, citation),
-        });
-    };
-    against(
-        PvSubject::ModuleVoltage,
-        question.module.sheet().system_voltage,
-        "cold open-circuit voltage against the module's greatest system voltage",
-        "cold open-circuit voltage against the module: its greatest system voltage is not stated",
-        SHEET,
-    );
-    against(
-        PvSubject::ControllerVoltage,
-        question.input.greatest_voltage,
-        "cold open-circuit voltage against the controller's greatest input voltage",
-        "cold open-circuit voltage against the controller: its greatest input voltage is not stated",
-        CONTROLLER,
-    );
-    for part in question.parts {
-        against(PvSubject::PartVoltage, part.greatest, part.what, part.what, PART);
-    }
-    if let Some(most) = question.factors.greatest_voltage {
-        let limit = ElectricPotential::new::<volt>(most.value);
-        let what = "cold open-circuit voltage against the greatest that the rule set admits";
-        against(PvSubject::RuleVoltage, Some(limit), what, what, most.citation);
-    }
-    if let Some(high) = question.input.window_high {
-        let subject = PvSubject::WindowHigh;
-        checks.push(
-            match voltages.cold_vmp {
-                Some(value) => PvCheck::made(
-                    subject,
-                    (value.get::<volt>(), PvRelation::AtMost, high.get::<volt>()),
-                    "V",
-                    "cold voltage at maximum power against the upper end of the controller's window",
-                    CONTROLLER,
-                ),
-                None => PvCheck::missing(subject, PvRelation::AtMost, "V", NO_VMP, CONTROLLER),
-            }
-            .yield_only(),
-        );
-    }
-}
-
-/// Hot maximum power against the bank's highest voltage with margin, and the window's lower end.
-fn hot(question: &StringQuestion<'_>, voltages: &StringVoltages, checks: &mut Checks) {
-    let subject = PvSubject::ChargeVoltage;
-    checks.push(match (voltages.hot_vmp, question.input.start_margin) {
-        (Some(value), Some(margin)) => {
-            let least = question.bank_highest + margin;
-            PvCheck::made(
-                subject,
-                (value.get::<volt>(), PvRelation::AtLeast, least.get::<volt>()),
-                "V",
-                "hot voltage at maximum power against the bank's highest charge voltage with the controller's margin",
-                RULE,
-            )
-        }
-        (None, _) => PvCheck::missing(subject, PvRelation::AtLeast, "V", NO_VMP, RULE),
-        (_, None) => {
-            let what = "hot voltage at maximum power: the controller's start margin is not stated";
-            PvCheck::missing(subject, PvRelation::AtLeast, "V", what, RULE)
-        }
-    });
-    if let Some(low) = question.input.window_low {
-        let subject = PvSubject::WindowLow;
-        checks.push(match voltages.hot_vmp {
-            Some(value) => PvCheck::made(
-                subject,
-                (value.get::<volt>(), PvRelation::AtLeast, low.get::<volt>()),
-                "V",
-                "hot voltage at maximum power against the lower end of the controller's window",
-                CONTROLLER,
-            ),
-            None => PvCheck::missing(subject, PvRelation::AtLeast, "V", NO_VMP, CONTROLLER),
-        });
-    }
-}
-
-/// Short circuit, operating current and current into the bank.
-fn input_current(
-    question: &StringQuestion<'_>,
-    layout: Layout,
-    currents: &ArrayCurrents,
-    checks: &mut Checks,
-) {
-    let input = &question.input;
-    let clamped = input.regulation == Regulation::Clamped;
-    let at_most = PvRelation::AtMost;
-    // A clamped array drives its current straight through: then the output's rating is the input's, too.
-    let bears = input.short_circuit_current.or(input.input_current);
-    let bears = if clamped { bears.or(input.output_current) } else { bears };
-    let subject = PvSubject::ShortCircuit;
-    let greatest = currents.array_greatest.get::<ampere>();
-    checks.push(match bears {
-        Some(limit) => PvCheck::made(
-            subject,
-            (greatest, at_most, limit.get::<ampere>()),
-            "A",
-            "short-circuit current with the irradiance factor against the controller's input",
-            CONTROLLER,
-        ),
-        None => {
-            let what =
-                "short-circuit current: neither short-circuit nor input current of the controller is stated";
-            PvCheck::missing(subject, at_most, "A", what, CONTROLLER)
-        }
-    });
-    let sheet = question.module.sheet();
-    let parallel = f64::from(layout.in_parallel) * question.module.rear_factor();
-    let operating = parallel * sheet.points.imp.get::<ampere>();
-    if let Some(limit) = input.input_current {
-        let numbers = (operating, at_most, limit.get::<ampere>());
-        let what = "current at maximum power against the controller's operating current";
-        let check = PvCheck::made(PvSubject::InputCurrent, numbers, "A", what, CONTROLLER);
-        checks.push(if clamped { check } else { check.yield_only() });
-    }
-    let subject = PvSubject::OutputCurrent;
-    let Some(limit) = input.output_current else {
-        let what = "current into the bank: the controller's output current is not stated";
-        checks.push(PvCheck::missing(subject, at_most, "A", what, CONTROLLER));
-        return;
-    };
-    let limit = limit.get::<ampere>();
-    checks.push(if clamped {
-        let what = "short-circuit current with the irradiance factor against the controller's output";
-        PvCheck::made(subject, (greatest, at_most, limit), "A", what, CONTROLLER)
-    } else {
-        let power = sheet.power.get::<watt>() * f64::from(layout.in_series) * parallel;
-        let what = "rated power over the bank's nominal voltage against the controller's output";
-        let numbers = (power / question.bank_nominal.get::<volt>(), at_most, limit);
-        PvCheck::made(subject, numbers, "A", what, CONTROLLER).yield_only()
-    });
-}
-
-/// Whether a string needs a device, and whether the one it has fits.
-fn string_device(
-    question: &StringQuestion<'_>,
-    currents: &ArrayCurrents,
-    checks: &mut Checks,
-) -> Option<bool> {
-    let at_most = PvRelation::AtMost;
-    let fuse = question.module.sheet().series_fuse.map(|i| i.get::<ampere>());
-    let ampacity = question.ampacity.map(|i| i.get::<ampere>());
-    let fault = question.back_feed.map(|back| (currents.fault + back).get::<ampere>());
-    let exceeds = |limit: Option<f64>| match (fault, limit) {
-        (Some(fault), Some(limit)) => Some(fault > limit),
-        _ => None,
-    };
-    // One limit that is exceeded is enough; none is known to be kept while one is unknown.
-    let required = match (exceeds(fuse), exceeds(ampacity)) {
-        (Some(true), _) | (_, Some(true)) => Some(true),
-        (Some(false), Some(false)) => Some(false),
-        _ => None,
-    };
-    let what_fuse =
-        "current of the other strings and the bank into a faulty one against the module's series-fuse rating";
-    let what_ampacity =
-        "current of the other strings and the bank into a faulty one against the string's conductor";
-    match question.device {
-        StringDevice::Absent => {
-            for (subject, limit, what, missing, citation) in [
-                (
-                    PvSubject::StringFault,
-                    fuse,
-                    what_fuse,
-                    "current into a faulty string: the module's series-fuse rating is not stated",
-                    question.factors.irradiance.citation,
-                ),
-                (
-                    PvSubject::ConductorFault,
-                    ampacity,
-                    what_ampacity,
-                    "current into a faulty string: the ampacity of its conductor is not known",
-                    question.factors.irradiance.citation,
-                ),
-            ] {
-                checks.push(match (fault, limit) {
-                    (Some(fault), Some(limit)) => {
-                        PvCheck::made(subject, (fault, at_most, limit), "A", what, citation)
-                    }
-                    (None, _) => {
-                        let what = "current into a faulty string: the controller's back-feed is not stated";
-                        PvCheck::missing(subject, at_most, "A", what, citation)
-                    }
-                    (_, None) => PvCheck::missing(subject, at_most, "A", missing, citation),
-                });
-            }
-        }
-        StringDevice::Rated(rating) => rated(question, currents, rating.get::<ampere>(), checks),
-        StringDevice::ToChoose => {
-            // Where a device is or may be required, its least rating must fit the module.
-            if required != Some(false)
-                && let (Some(least), Some(fuse)) = (currents.device_least, fuse)
-            {
-                let what = "least rating of a string's device against the module's series-fuse rating";
-                let numbers = (least.get::<ampere>(), at_most, fuse);
-                checks.push(PvCheck::made(PvSubject::DeviceModule, numbers, "A", what, SHEET));
-            } else if required != Some(false) {
-                let what = "device of a string: the module's series-fuse rating or the rule set's factor is not stated";
-                checks.push(PvCheck::missing(PvSubject::DeviceModule, at_most, "A", what, SHEET));
-            }
-        }
-    }
-    required
-}
-
-/// The rating of a string's device between its least and its most.
-fn rated(question: &StringQuestion<'_>, currents: &ArrayCurrents, rating: f64, checks: &mut Checks) {
-    let sheet = question.module.sheet();
-    let least = currents.device_least.zip(question.factors.device_least);
-    checks.push(match least {
-        Some((least, factor)) => PvCheck::made(
-            PvSubject::DeviceLeast,
-            (rating, PvRelation::AtLeast, least.get::<ampere>()),
-            "A",
-            "rating of a string's device against its least",
-            factor.citation,
-        ),
-        None => PvCheck::missing(
-            PvSubject::DeviceLeast,
-            PvRelation::AtLeast,
-            "A",
-            "least rating of a string's device: the rule set holds no factor",
-            PRACTICE,
-        ),
-    });
-    if let Some(factor) = question.factors.device_most {
-        let most = sheet.points.isc.get::<ampere>() * question.module.rear_factor() * factor.value;
-        let what = "rating of a string's device against its most";
-        let numbers = (rating, PvRelation::AtMost, most);
-        checks.push(PvCheck::made(PvSubject::DeviceMost, numbers, "A", what, factor.citation));
-    }
-    checks.push(match sheet.series_fuse {
-        Some(fuse) => PvCheck::made(
-            PvSubject::DeviceModule,
-            (rating, PvRelation::AtMost, fuse.get::<ampere>()),
-            "A",
-            "rating of a string's device against the module's series-fuse rating",
-            SHEET,
-        ),
-        None => PvCheck::missing(
-            PvSubject::DeviceModule,
-            PvRelation::AtMost,
-            "A",
-            "rating of a string's device: the module's series-fuse rating is not stated",
-            SHEET,
-        ),
-    });
-}
-
-const CONTROLLER: Citation = Citation::new("the controller's sheet", "", Seen::Stated);
-const PART: Citation = Citation::new("the part's sheet", "", Seen::Stated);
-const NO_VMP: &str = "voltage at maximum power: neither coefficient of power nor of voltage is stated";

@@ -30,7 +30,7 @@ calculations! {
     /// ```
     /// use ampwright::{array::array_to_load_ratio, quantity::{parse, readable}};
     /// let reached = array_to_load_ratio(parse("5.38 A")?, parse("3")?, parse("3.1 h")?, parse("10 %")?, parse("40 Ah")?)?;
-    /// assert_eq!(readable(reached).to_string(), "1.13");
+    /// assert_eq!(readable(reached).to_string(), "1.126");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn array_to_load_ratio(

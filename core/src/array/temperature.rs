@@ -38,7 +38,7 @@ calculations! {
     /// ```
     /// use ampwright::{array::cell_temperature, quantity::{parse, readable}};
     /// let cell = cell_temperature(parse("30 degC")?, parse("47 degC")?, parse("1000 W/m2")?)?;
-    /// assert_eq!(readable(cell).to_string(), "63.75 degC");
+    /// assert_eq!(readable(cell).to_string(), "63.8 degC");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn cell_temperature(
@@ -95,7 +95,7 @@ calculations! {
         /// Voltage of one module at maximum power and 25 °C.
         vmp: ElectricPotential in volt [> 0.0],
         /// Coefficient of the voltage at maximum power: that of power less that of current.
-        coefficient: RatioPerTemperature in per_kelvin [-0.01 ..= 0.0],
+        coefficient: RatioPerTemperature in per_kelvin [-0.05 ..= 0.01],
         /// Hottest cells.
         hottest: ThermodynamicTemperature in degree_celsius [-60.0 ..= 150.0],
         /// Modules in series.
@@ -112,14 +112,57 @@ calculations! {
         vmp * line(coefficient, hottest) * in_series * (one - drop) * (one - ageing)
     }
 
+    /// Least and most modules in series between a voltage that they must reach hot and one they may not exceed cold.
+    ///
+    /// # Example
+    /// 49.5 V with −0.28 %/K at −5 °C, 38.9 V hot, for an input of 200 to 1000 V:
+    /// ```
+    /// use ampwright::{array::modules_in_series, quantity::{parse, readable}};
+    /// let count = modules_in_series(
+    ///     parse("49.5 V")?, parse("-0.28 %/K")?, parse("-5 degC")?, parse("1000 V")?, parse("38.9 V")?, parse("200 V")?,
+    /// )?;
+    /// assert_eq!((count.least.value, count.most.value), (6.0, 18.0));
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn modules_in_series(
+        /// Of one module at 25 °C.
+        voc: ElectricPotential in volt [> 0.0],
+        /// Coefficient of the open-circuit voltage.
+        coefficient: RatioPerTemperature in per_kelvin [-0.01 ..= 0.0],
+        /// Coldest air at first light.
+        coldest: ThermodynamicTemperature in degree_celsius [-60.0 ..= 40.0],
+        /// The lowest of all that bear the array's voltage: controller, modules, isolator, devices.
+        greatest_voltage: ElectricPotential in volt [> 0.0],
+        /// Voltage of one module at maximum power, hot, after wiring and ageing.
+        hot_voltage: ElectricPotential in volt [> 0.0],
+        /// What the string must reach: the bank's highest charge voltage with the controller's margin.
+        needed_voltage: ElectricPotential in volt [> 0.0],
+    ) => ModulesInSeries {
+        /// Fewest that reach the needed voltage hot.
+        least: Ratio in ratio,
+        /// Most that keep to the greatest voltage cold; where it is below the least, no count fits.
+        most: Ratio in ratio,
+    }
+    formula "least = ⌈U_needed/U_hot⌉, most = ⌊U_greatest/(Voc·(1 + β·(T − 25 °C)))⌋"
+    source "straight line of the sheet's coefficient (IEC 60891, recalled)"
+    {
+        // The last bit of a quotient must not move a count of modules.
+        let exact = (needed_voltage / hot_voltage).value;
+        let room = (greatest_voltage / (voc * line(coefficient, coldest))).value;
+        ModulesInSeries {
+            least: Ratio::new::<ratio>(libm::ceil(exact * (1.0 - 1e-12))),
+            most: Ratio::new::<ratio>(libm::floor(room * (1.0 + 1e-12))),
+        }
+    }
+
     /// Power of modules at a cell temperature and an irradiance.
     ///
     /// # Example
     /// 150 W with −0.5 %/K in full sun at 63.75 °C:
     /// ```
     /// use ampwright::{array::module_power, quantity::{parse, readable}};
-    /// let power = module_power(parse("150 W")?, parse("-0.5 %/K")?, parse("63.75 degC")?, parse("1000 W/m2")?)?;
-    /// assert_eq!(readable(power).to_string(), "121 W");
+    /// let power = module_power(parse("150 W")?, parse("-0.5 %/K")?, parse("63.8 degC")?, parse("1000 W/m2")?)?;
+    /// assert_eq!(readable(power).to_string(), "120.9 W");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn module_power(
@@ -131,7 +174,7 @@ calculations! {
         cell: ThermodynamicTemperature in degree_celsius [-60.0 ..= 150.0],
         /// In the plane of the array.
         irradiance: Irradiance in watt_per_square_meter [0.0 ..= 2000.0],
-    ) -> power: Power in watt
+    ) -> delivered: Power in watt
     formula "P = P₀·(G/(1000 W/m²))·(1 + γ·(Tc − 25 °C))"
     source "straight line of the sheet's coefficient (IEC 60891, recalled)"
     { power * line(coefficient, cell) * (irradiance.get::<watt_per_square_meter>() / STC_W_PER_M2) }

@@ -1,7 +1,7 @@
-//! Charge controllers: what an array gives through one that clamps it to the bank, and through one that tracks its maximum.
+//! Charge controllers, as their sheets state them.
 //!
-//! The array comes in as numbers and a current for each voltage; how it got them is [`crate::array`]'s business. What the
-//! controller uses itself, day and night, is a standing load and belongs to [`crate::load`].
+//! What one makes of an array's power is in [`super::controller_yield()`]. What it uses itself, day and night, is a standing
+//! load and belongs to [`crate::load`].
 
 use core::fmt;
 use core::str::FromStr;
@@ -9,7 +9,7 @@ use core::str::FromStr;
 use arrayvec::ArrayVec;
 use uom::si::{electric_current::ampere, electric_potential::volt, power::watt, ratio::ratio};
 
-use crate::catalogue::{Choice, calculations};
+use crate::catalogue::Choice;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error, Snippet};
 use crate::quantity::{ElectricCurrent, ElectricPotential, Power, Ratio, VoltagePerTemperature};
@@ -182,110 +182,13 @@ impl Controller {
     }
 }
 
-/// An array at the controller's input, in the light and at the cell temperature of the moment.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct ArrayInput {
-    /// Rated power times the part of 1000 W/m²: what it would give with cells at 25 °C.
-    pub rated: Power,
-    /// Voltage at maximum power.
-    pub vmp: ElectricPotential,
-    /// Current at maximum power.
-    pub imp: ElectricCurrent,
-    /// Open-circuit voltage.
-    pub voc: ElectricPotential,
-}
-
-/// What reaches the bank, and where the rest went: the terms sum to what the array is rated for.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct ControllerYield {
-    /// What the array would give in this light with cells at 25 °C.
-    pub rated: Power,
-    /// Lost to the cells' temperature; negative in the cold.
-    pub temperature: Power,
-    /// Lost because the array is not held at its voltage of maximum power.
-    pub voltage_mismatch: Power,
-    /// Lost because the output is at its limit.
-    pub clipping: Power,
-    /// Lost in the controller.
-    pub conversion: Power,
-    /// Into the bank.
-    pub delivered: Power,
-    /// Voltage at which the array is held; 0 where it delivers nothing.
-    pub array_voltage: ElectricPotential,
-    /// Current into the bank.
-    pub current: ElectricCurrent,
-}
-
-/// What an array gives through a controller into a bank at a voltage.
-///
-/// A clamped array stands at the bank's voltage. A tracked one stands at its maximum, or at the end of the controller's
-/// window next to it, where the window begins no lower than bank voltage plus start margin (0 where not stated); an array that
-/// cannot reach the window gives nothing. Both end at the output current: a clamping controller cannot hold back more
-/// current than that, so what is beyond its rating is not counted as yield.
-///
-/// # Errors
-/// [`Error::OutOfRange`] for figures outside their ranges, or a current of the array that is not finite.
-pub fn controller_yield(
-    controller: &Controller,
-    array: &ArrayInput,
-    bank: ElectricPotential,
-    current_at: impl Fn(ElectricPotential) -> ElectricCurrent,
-) -> Result<ControllerYield, Error> {
-    controller.check()?;
-    let bank = bank.get::<volt>();
-    checked("bank voltage", bank, "V", Allowed::AboveUpTo(0.0, 2000.0))?;
-    let rated = array.rated.get::<watt>();
-    let (vmp, imp) = (array.vmp.get::<volt>(), array.imp.get::<ampere>());
-    let voc = array.voc.get::<volt>();
-    checked("rated power of the array", rated, "W", Allowed::Between(0.0, 1e9))?;
-    checked("vmp", vmp, "V", Allowed::Between(0.0, 1e4))?;
-    checked("imp", imp, "A", Allowed::Between(0.0, 1e5))?;
-    checked("voc", voc, "V", Allowed::Between(0.0, 1e4))?;
-    let held = held_at(controller, vmp, voc, bank);
-    let flowing = match held {
-        Some(volts) => current_at(ElectricPotential::new::<volt>(volts)).get::<ampere>(),
-        None => 0.0,
-    };
-    checked("current of the array", flowing, "A", Allowed::Between(-1e6, 1e6))?;
-    let most = vmp * imp;
-    // No array gives more than its maximum, and none takes power through a controller.
-    let given = (held.unwrap_or(0.0) * flowing).clamp(0.0, most);
-    let efficiency = controller.efficiency().0.get::<ratio>();
-    let limit = controller.output_current.get::<ampere>() * bank;
-    let delivered = (given * efficiency).min(limit);
-    let taken = delivered / efficiency;
-    let w = Power::new::<watt>;
-    Ok(ControllerYield {
-        rated: w(rated),
-        temperature: w(rated - most),
-        voltage_mismatch: w(most - given),
-        clipping: w(given - taken),
-        conversion: w(taken - delivered),
-        delivered: w(delivered),
-        array_voltage: ElectricPotential::new::<volt>(held.filter(|_| given > 0.0).unwrap_or(0.0)),
-        current: ElectricCurrent::new::<ampere>(delivered / bank),
-    })
-}
-
-/// Voltage at which the array is held, if it delivers there.
-fn held_at(controller: &Controller, vmp: f64, voc: f64, bank: f64) -> Option<f64> {
-    let volts = match controller.kind {
-        ControllerKind::Pwm => bank,
-        ControllerKind::Mppt => {
-            let margin = controller.start_margin.map_or(0.0, |v| v.get::<volt>());
-            let low = controller.window_low.map_or(0.0, |v| v.get::<volt>()).max(bank + margin);
-            let high = controller.window_high.map_or(f64::INFINITY, |v| v.get::<volt>());
-            if low > high {
-                return None;
-            }
-            vmp.clamp(low, high)
-        }
-    };
-    (volts < voc).then_some(volts)
-}
-
-fn checked(name: &'static str, value: f64, unit: &'static str, allowed: Allowed) -> Result<(), Error> {
-    // Written so that NaN fails.
+/// Refuses a value outside its range; written so that NaN fails.
+pub(super) fn checked(
+    name: &'static str,
+    value: f64,
+    unit: &'static str,
+    allowed: Allowed,
+) -> Result<(), Error> {
     let held = match allowed {
         Allowed::Between(least, most) => value >= least && value <= most,
         Allowed::AboveUpTo(least, most) => value > least && value <= most,
@@ -294,80 +197,51 @@ fn checked(name: &'static str, value: f64, unit: &'static str, allowed: Allowed)
     if held { Ok(()) } else { Err(Error::OutOfRange { name, value, unit, allowed }) }
 }
 
-calculations! {
-    /// Power into a bank from an array that is clamped to its voltage.
-    ///
-    /// The plain product: the current at the bank's voltage is nearly that at maximum power, a little more in truth.
-    ///
-    /// # Example
-    /// A module of 17 V and 7 A on a bank at 12 V:
-    /// ```
-    /// use ampwright::{converter::pwm_power, quantity::{parse, readable}};
-    /// let result = pwm_power(parse("17 V")?, parse("7 A")?, parse("12 V")?, parse("100 %")?)?;
-    /// assert_eq!(readable(result.delivered).to_string(), "84 W");
-    /// assert_eq!(readable(result.mismatch_part).to_string(), "0.294");
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    fn pwm_power(
-        /// Voltage of the array at maximum power, with the cells as hot as they are.
-        vmp: ElectricPotential in volt [> 0.0],
-        /// Current of the array at maximum power.
-        imp: ElectricCurrent in ampere [>= 0.0],
-        /// Of the bank.
-        bank_voltage: ElectricPotential in volt [> 0.0],
-        /// Of the controller.
-        efficiency: Ratio in ratio [> 0.0 ..= 1.0] = 0.98,
-    ) => PwmPower {
-        /// Into the bank.
-        delivered: Power in watt,
-        /// Part of the maximum power that the clamp loses.
-        mismatch_part: Ratio in ratio,
-    }
-    where (bank_voltage <= vmp) bank_voltage in volt: "it must not be above vmp: the array's current falls there; take more modules in series"
-    formula "P = Imp·U·η, part lost 1 − U/Vmp"
-    source "energy balance; the default efficiency is common practice, no source"
-    {
-        PwmPower {
-            delivered: imp * bank_voltage * efficiency,
-            mismatch_part: Ratio::new::<ratio>(1.0) - bank_voltage / vmp,
-        }
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use super::*;
+    use crate::quantity::{Textual, parse};
+
+    fn q<Q: Textual>(text: &str) -> Q {
+        parse(text).unwrap()
     }
 
-    /// Power into a bank from an array held at its maximum, up to the controller's output current.
-    ///
-    /// # Example
-    /// 900 W through 95 % into 24 V with at most 30 A:
-    /// ```
-    /// use ampwright::{converter::mppt_power, quantity::{parse, readable}};
-    /// let result = mppt_power(parse("900 W")?, parse("24 V")?, parse("30 A")?, parse("95 %")?)?;
-    /// assert_eq!(readable(result.delivered).to_string(), "720 W");
-    /// assert_eq!(readable(result.clipped).to_string(), "142 W");
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    fn mppt_power(
-        /// Greatest power of the array in this light and heat.
-        array_power: Power in watt [>= 0.0],
-        /// Of the bank.
-        bank_voltage: ElectricPotential in volt [> 0.0],
-        /// Greatest current into the bank.
-        output_current: ElectricCurrent in ampere [> 0.0],
-        /// Of the controller.
-        efficiency: Ratio in ratio [> 0.0 ..= 1.0] = 0.95,
-    ) => MpptPower {
-        /// Into the bank.
-        delivered: Power in watt,
-        /// Power that the array could give and the output does not take.
-        clipped: Power in watt,
-        /// Lost in the controller.
-        conversion: Power in watt,
+    #[test]
+    fn sheets_that_cannot_be_true_are_refused() {
+        let mut controller = Controller::plain(ControllerKind::Mppt, q("20 A"));
+        controller.window_low = Some(q("60 V"));
+        controller.window_high = Some(q("50 V"));
+        assert_eq!(
+            controller.check().unwrap_err().to_string(),
+            "window_low is 60 V; it must not be above window_high"
+        );
+        controller.window_low = None;
+        controller.greatest_input = Some(q("45 V"));
+        assert_eq!(
+            controller.check().unwrap_err().to_string(),
+            "window_high is 50 V; it must not be above greatest_input"
+        );
+        assert!(Controller::plain(ControllerKind::Pwm, q("0 A")).check().is_err());
     }
-    formula "P = min(η·P_array, I·U), clipped = P_array − P/η, conversion = P/η − P"
-    source "energy balance; the default efficiency is common practice, no source"
-    {
-        let limit = output_current * bank_voltage;
-        let could = array_power * efficiency;
-        let delivered = if could < limit { could } else { limit };
-        let taken = delivered / efficiency;
-        MpptPower { delivered, clipped: array_power - taken, conversion: taken - delivered }
+
+    #[test]
+    fn what_it_serves_is_known_or_not() {
+        let mut controller = Controller::plain(ControllerKind::Pwm, q("20 A"));
+        assert_eq!(controller.serves(q("12 V")), None);
+        controller.systems.push(q("12 V"));
+        controller.systems.push(q("24 V"));
+        assert_eq!((controller.serves(q("24 V")), controller.serves(q("48 V"))), (Some(true), Some(false)));
+        assert_eq!(controller.efficiency().1.seen, Seen::Practice);
+        assert_eq!("mppt".parse::<ControllerKind>(), Ok(ControllerKind::Mppt));
+        assert!("MPPT".parse::<ControllerKind>().is_err());
+        assert!(
+            <ControllerKind as Choice>::ALL
+                .iter()
+                .map(|k| k.word())
+                .eq(ControllerKind::WORDS.iter().copied())
+        );
     }
 }

@@ -2,6 +2,7 @@
 
 use uom::si::{electric_current::ampere, electric_potential::volt, power::watt, ratio::ratio};
 
+use super::controller::checked;
 use crate::catalogue::calculations;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
@@ -87,7 +88,7 @@ impl DcDc {
     /// };
     /// let draw = converter.draw(parse("10 A")?, parse("21 V")?)?;
     /// assert_eq!(readable(draw.input_current).to_string(), "6.76 A");
-    /// assert_eq!(readable(draw.loss).to_string(), "17 W");
+    /// assert_eq!(readable(draw.loss).to_string(), "17.05 W");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     pub fn draw(
@@ -121,16 +122,6 @@ impl DcDc {
     pub fn greatest_power(&self) -> Power {
         Power::new::<watt>(self.output_voltage.get::<volt>() * self.output_current.get::<ampere>())
     }
-}
-
-fn checked(name: &'static str, value: f64, unit: &'static str, allowed: Allowed) -> Result<(), Error> {
-    // Written so that NaN fails.
-    let held = match allowed {
-        Allowed::Between(least, most) => value >= least && value <= most,
-        Allowed::AboveUpTo(least, most) => value > least && value <= most,
-        _ => value.is_finite(),
-    };
-    if held { Ok(()) } else { Err(Error::OutOfRange { name, value, unit, allowed }) }
 }
 
 calculations! {
@@ -168,5 +159,72 @@ calculations! {
         let output_power = output_voltage * output_current;
         let input_power = output_power / efficiency;
         DcDcInput { output_power, input_current: input_power / input_voltage, loss: input_power - output_power }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::quantity::{Textual, parse};
+
+    fn q<Q: Textual>(text: &str) -> Q {
+        parse(text).unwrap()
+    }
+
+    fn converter() -> DcDc {
+        DcDc {
+            isolation: Some(Isolation::Isolated),
+            input_low: q("18 V"),
+            input_high: q("35 V"),
+            output_voltage: q("12.5 V"),
+            output_current: q("20 A"),
+            efficiency: None,
+            idle_power: None,
+        }
+    }
+
+    #[test]
+    fn what_it_cannot_do_is_refused() {
+        let told = |load, input| converter().draw(q(load), q(input)).unwrap_err().to_string();
+        assert_eq!(told("21 A", "24 V"), "output current is 21 A; it must be between 0 and 20");
+        assert_eq!(told("10 A", "17.9 V"), "input voltage is 17.9 V; it must be between 18 and 35");
+        assert_eq!(told("10 A", "36 V"), "input voltage is 36 V; it must be between 18 and 35");
+        let upside_down = DcDc { input_low: q("36 V"), ..converter() };
+        assert!(matches!(upside_down.draw(q("1 A"), q("24 V")), Err(Error::Contradiction { .. })));
+    }
+
+    #[test]
+    fn without_a_stated_efficiency_it_is_practice() {
+        let draw = converter().draw(q("20 A"), q("18 V")).unwrap();
+        assert_eq!(draw.efficiency.seen, Seen::Practice);
+        assert_eq!((draw.used.value, converter().greatest_power().value), (1.0, 250.0));
+        assert!((draw.input_current.value - 250.0 / 0.9 / 18.0).abs() < 1e-12);
+    }
+
+    proptest! {
+        #[test]
+        fn energy_is_kept_and_the_lowest_voltage_draws_most(load in 0.0..20.0f64, input in 18.0..35.0f64) {
+            let at = |x| converter().draw(ElectricCurrent::new::<ampere>(load), ElectricPotential::new::<volt>(x)).unwrap();
+            let draw = at(input);
+            prop_assert!((draw.input_current.value * input - 12.5 * load - draw.loss.value).abs() < 1e-9);
+            prop_assert!(at(18.0).input_current >= draw.input_current);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(a: u64, b: u64, c: u64, d: u64, e: u64) {
+            let f = f64::from_bits;
+            let odd = DcDc {
+                input_low: ElectricPotential::new::<volt>(f(a)),
+                output_voltage: ElectricPotential::new::<volt>(f(b)),
+                output_current: ElectricCurrent::new::<ampere>(f(c)),
+                ..converter()
+            };
+            let _ = odd.draw(ElectricCurrent::new::<ampere>(f(d)), ElectricPotential::new::<volt>(f(e)));
+        }
     }
 }

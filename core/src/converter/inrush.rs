@@ -130,3 +130,67 @@ calculations! {
     source "Ohm's law"
     { voltage * remaining / loop_resistance }
 }
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::capacitance::microfarad;
+    use uom::si::electric_potential::volt;
+    use uom::si::electrical_resistance::ohm;
+    use uom::si::energy::joule;
+    use uom::si::ratio::ratio;
+    use uom::si::time::second;
+
+    use super::*;
+
+    /// Midpoint steps through dU/dt = (U₀ − U)/(R·C): time until the rest is left, heat in the resistor.
+    fn charged(u0: f64, r: f64, c: f64, remaining: f64) -> (f64, f64) {
+        let step = 1e-4 * r * c;
+        let (mut u, mut time, mut heat) = (0.0, 0.0, 0.0);
+        while u0 - u > remaining * u0 {
+            let middle = u + 0.5 * step * (u0 - u) / (r * c);
+            let current = (u0 - middle) / r;
+            heat += current * current * r * step;
+            u += step * current / c;
+            time += step;
+        }
+        (time, heat)
+    }
+
+    proptest! {
+        #![proptest_config(ProptestConfig::with_cases(16))]
+        #[test]
+        fn closed_forms_are_the_integral(
+            u0 in 5.0..800.0f64, r in 0.5..500.0f64, uf in 100.0..50_000.0f64, remaining in 0.01..0.5f64,
+        ) {
+            let (u, c) = (ElectricPotential::new::<volt>(u0), Capacitance::new::<microfarad>(uf));
+            let (time, heat) = charged(u0, r, uf * 1e-6, remaining);
+            let part = Ratio::new::<ratio>(remaining);
+            let ours = precharge_time(ElectricalResistance::new::<ohm>(r), c, part).unwrap();
+            // One step of 1e-4 time constants.
+            prop_assert!((ours.value - time).abs() <= 1.1e-4 * r * uf * 1e-6);
+            // The resistor for that time is the one it took.
+            let resistor = precharge_resistance(u, c, ours, part).unwrap();
+            prop_assert!((resistor.resistance.value / r - 1.0).abs() < 1e-12);
+            prop_assert!((resistor.energy.get::<joule>() / heat - 1.0).abs() < 1e-3);
+            prop_assert!((resistor.peak_power.value / (u0 * u0 / r) - 1.0).abs() < 1e-12);
+            // What is left across the switch drives what is left of the peak.
+            let inrush = inrush_current(u, ElectricalResistance::new::<ohm>(0.01), c).unwrap();
+            let closing = closing_current(u, ElectricalResistance::new::<ohm>(0.01), part).unwrap();
+            prop_assert!((closing.value / (inrush.peak.value * remaining) - 1.0).abs() < 1e-12);
+        }
+    }
+
+    #[test]
+    fn nothing_out_of_range_passes() {
+        let (u, c) = (ElectricPotential::new::<volt>(26.0), Capacitance::new::<microfarad>(10_000.0));
+        let (t, part) = (Time::new::<second>(2.0), Ratio::new::<ratio>(0.05));
+        for bad in [f64::NAN, f64::INFINITY, 0.0, -1.0] {
+            assert!(precharge_resistance(ElectricPotential::new::<volt>(bad), c, t, part).is_err(), "{bad}");
+            assert!(precharge_resistance(u, Capacitance::new::<microfarad>(bad), t, part).is_err(), "{bad}");
+            assert!(precharge_resistance(u, c, Time::new::<second>(bad), part).is_err(), "{bad}");
+            assert!(precharge_resistance(u, c, t, Ratio::new::<ratio>(bad)).is_err(), "{bad}");
+            assert!(inrush_current(u, ElectricalResistance::new::<ohm>(bad), c).is_err(), "{bad}");
+        }
+    }
+}

@@ -8,103 +8,16 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 use uom::si::time::{hour, second};
 
+use super::efficiency::EfficiencyCurve;
+use super::heat::{HeatDerating, heat_factor};
+use super::inrush::{Inrush, inrush_current};
 use crate::catalogue::calculations;
 use crate::error::{Allowed, Error};
 use crate::law::{constant_power_current, inverter_input_current};
 use crate::quantity::{
     Capacitance, ElectricCurrent, ElectricPotential, ElectricalResistance, Energy, Power, Ratio,
-    RatioPerTemperature, TemperatureInterval, ThermodynamicTemperature, Time,
+    ThermodynamicTemperature, Time,
 };
-
-/// Efficiency over load, stated at up to eight loads, linear between them.
-///
-/// Below the first point the input falls in a straight line to the idle power; above the last its efficiency is held,
-/// which flatters a surge. With one figure only, that is taken for full load: the input is then a straight line from
-/// idle to full load, so that the figure holds for what is converted and the idle power comes on top.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct EfficiencyCurve {
-    /// Load as a part of continuous power, efficiency.
-    points: [(f64, f64); Self::ROOM],
-    count: usize,
-}
-
-impl EfficiencyCurve {
-    /// How many points it holds.
-    pub const ROOM: usize = 8;
-
-    /// One figure.
-    ///
-    /// # Errors
-    /// [`Error::OutOfRange`] where it is not above 0 and at most 1.
-    pub fn flat(efficiency: Ratio) -> Result<Self, Error> {
-        Self::points(&[(Ratio::new::<ratio>(1.0), efficiency)])
-    }
-
-    /// Several: load as a part of continuous power, rising, and the efficiency there.
-    ///
-    /// # Errors
-    /// [`Error::WrongCount`] with none or more than eight; [`Error::OutOfRange`] where a load is not above 0 and at most
-    /// 4 or an efficiency not above 0 and at most 1; [`Error::Contradiction`] where loads do not rise, or where more
-    /// would come out for less that goes in.
-    ///
-    /// # Example
-    /// ```
-    /// use ampwright::{converter::EfficiencyCurve, quantity::parse};
-    /// let curve = [("10 %", "85 %"), ("30 %", "94 %"), ("100 %", "90 %")];
-    /// let curve = curve.map(|(load, efficiency)| (parse(load).unwrap(), parse(efficiency).unwrap()));
-    /// assert!(EfficiencyCurve::points(&curve).is_ok());
-    /// ```
-    pub fn points(points: &[(Ratio, Ratio)]) -> Result<Self, Error> {
-        if points.is_empty() || points.len() > Self::ROOM {
-            return Err(Error::WrongCount {
-                what: "points of efficiency",
-                given: points.len(),
-                needed: Self::ROOM,
-            });
-        }
-        let mut curve = Self { points: [(0.0, 0.0); Self::ROOM], count: points.len() };
-        let mut before = (0.0, 0.0);
-        for (cell, &(load, efficiency)) in curve.points.iter_mut().zip(points) {
-            let (load, efficiency) = (load.value, efficiency.value);
-            above_up_to("load", load, 4.0)?;
-            above_up_to("efficiency", efficiency, 1.0)?;
-            let input = load / efficiency;
-            if load <= before.0 || input <= before.1 {
-                let why = if load <= before.0 {
-                    "the loads of a curve must rise"
-                } else {
-                    "more would come out for less that goes in; check the efficiencies beside it"
-                };
-                return Err(Error::Contradiction { name: "load", value: load, unit: "", why });
-            }
-            before = (load, input);
-            *cell = (load, efficiency);
-        }
-        Ok(curve)
-    }
-
-    /// Input over continuous power, for a load and an idle power over continuous power.
-    fn input(&self, load: f64, idle: f64) -> f64 {
-        let points = self.points.get(..self.count).unwrap_or_default();
-        let (mut low, mut input) = ((0.0, f64::NAN), f64::NAN);
-        for &(at, efficiency) in points {
-            if load <= at {
-                input = if low.0 > 0.0 {
-                    load / (low.1 + (efficiency - low.1) * (load - low.0) / (at - low.0))
-                } else {
-                    load / efficiency + idle * (1.0 - load / at)
-                };
-                break;
-            }
-            low = (at, efficiency);
-        }
-        if input.is_nan() {
-            input = load / low.1;
-        }
-        // Whatever the points say, an inverter at work loses no less than an idle one.
-        input.max(load + idle)
-    }
-}
 
 /// Power that an inverter bears for a short time.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -113,17 +26,6 @@ pub struct Surge {
     pub power: Power,
     /// For so long.
     pub duration: Time,
-}
-
-/// Loss of continuous power in heat, as the maker states it.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct HeatDerating {
-    /// Full power up to here.
-    pub from: ThermodynamicTemperature,
-    /// Part of full power that is lost for each kelvin above.
-    pub per_kelvin: RatioPerTemperature,
-    /// Above this it does not run.
-    pub greatest: ThermodynamicTemperature,
 }
 
 /// An inverter, as its sheet states it.
@@ -158,83 +60,6 @@ pub struct InverterPoint {
     pub voltage: ElectricPotential,
     /// Whether that voltage is below the one at which it stops: it does not run there.
     pub trips: bool,
-}
-
-/// What an inverter is asked for.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct InverterDemand {
-    /// Greatest coincident real power of the AC loads.
-    pub power: Power,
-    /// Greatest coincident apparent power, volt-amperes.
-    pub apparent: Power,
-    /// Greatest apparent power with the largest start, volt-amperes.
-    pub starting: Power,
-    /// How long that start lasts; `None`: not known.
-    pub duration: Option<Time>,
-    /// Around the inverter; `None`: not known.
-    pub ambient: Option<ThermodynamicTemperature>,
-}
-
-/// One comparison of an inverter with what it is asked for.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum Suffices {
-    /// It does.
-    Yes {
-        /// What it gives.
-        given: Power,
-        /// What is asked.
-        asked: Power,
-    },
-    /// It does not.
-    No {
-        /// What it gives.
-        given: Power,
-        /// What is asked.
-        asked: Power,
-    },
-    /// Too short: it bears the power, but not for so long.
-    TooShort {
-        /// How long it bears it.
-        given: Time,
-        /// How long the start lasts.
-        asked: Time,
-    },
-    /// Not checked for want of a datum.
-    NotChecked {
-        /// Which one: `surge rating`.
-        missing: &'static str,
-    },
-}
-
-impl Suffices {
-    /// Whether it was checked and suffices.
-    pub const fn passes(&self) -> bool {
-        matches!(self, Self::Yes { .. })
-    }
-
-    fn compare(given: Power, asked: Power) -> Self {
-        if asked <= given { Self::Yes { given, asked } } else { Self::No { given, asked } }
-    }
-}
-
-/// How an inverter stands to what it is asked for.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct InverterVerdict {
-    /// Watts without end.
-    pub power: Suffices,
-    /// Volt-amperes without end.
-    pub apparent: Suffices,
-    /// Start.
-    pub start: Suffices,
-    /// Heat: `None` where the ambient counted; else what was missing.
-    pub heat: Option<&'static str>,
-}
-
-impl InverterVerdict {
-    /// Whether all three were checked and suffice. Where heat was not checked, that is to be told beside it.
-    pub const fn passes(&self) -> bool {
-        self.power.passes() && self.apparent.passes() && self.start.passes()
-    }
 }
 
 impl Inverter {
@@ -277,10 +102,10 @@ impl Inverter {
     /// ```
     pub fn input_power(&self, output: Power) -> Result<Power, Error> {
         self.check()?;
-        at_least("output power", output, 0.0)?;
+        Allowed::AtLeast(0.0).check("output power", output.get::<watt>(), "W")?;
         let (load, idle) = (output / self.continuous, self.idle / self.continuous);
         let input = self.continuous * self.efficiency.input(load.value, idle.value);
-        at_least("input power", input, 0.0)?;
+        Allowed::AtLeast(0.0).check("input power", input.get::<watt>(), "W")?;
         Ok(input)
     }
 
@@ -328,7 +153,7 @@ impl Inverter {
         Ok(InverterPoint { power, current, voltage, trips: voltage < self.lowest_voltage })
     }
 
-    /// What it delivers without end at an ambient, real and apparent power.
+    /// What it delivers without end at an ambient: real power, apparent power.
     ///
     /// Without a derating, full power at any ambient: whether the ambient counted is told by [`Inverter::judge`].
     ///
@@ -336,79 +161,31 @@ impl Inverter {
     /// [`Error::OutOfRange`] where the ambient is not −90 to 150 °C, or the inverter's own figures are out of range.
     pub fn continuous_at(&self, ambient: ThermodynamicTemperature) -> Result<(Power, Power), Error> {
         self.check()?;
-        let factor = match self.derating {
-            None => 1.0,
-            Some(derating) => {
-                heat_factor(ambient, derating.from, derating.per_kelvin, derating.greatest)?.value
-            }
-        };
-        let apparent = self.apparent.unwrap_or(self.continuous);
-        Ok((self.continuous * factor, apparent * factor))
+        let factor = self.heat_part(ambient)?;
+        let (power, apparent) = self.full();
+        Ok((power * factor, apparent * factor))
     }
 
-    /// Compares it with what is asked.
-    ///
-    /// A start that stays within the continuous apparent power needs no surge rating; any other must stay within the
-    /// surge power for no longer than the surge lasts.
+    /// Part of its power that is left at an ambient; 1 where no derating is stated.
+    pub(super) fn heat_part(&self, ambient: ThermodynamicTemperature) -> Result<Ratio, Error> {
+        self.derating.map_or(Ok(Ratio::new::<ratio>(1.0)), |derating| {
+            heat_factor(ambient, derating.from, derating.per_kelvin, derating.greatest)
+        })
+    }
+
+    /// Inrush when its switch closes on empty capacitors; `None` where their capacitance is not stated, so that it is
+    /// not checked.
     ///
     /// # Errors
-    /// [`Error::OutOfRange`] where a figure of either is out of range.
-    ///
-    /// # Example
-    /// ```
-    /// use ampwright::converter::{Inverter, InverterDemand, Suffices, Surge};
-    /// use ampwright::quantity::parse;
-    /// let plain = Inverter::plain(parse("1 kW")?, parse("90 %")?, parse("20 W")?, parse("10.5 V")?)?;
-    /// let freezer = InverterDemand {
-    ///     power: parse("480 W")?, apparent: parse("600 W")?, starting: parse("1.8 kW")?,
-    ///     duration: Some(parse("1 s")?), ambient: None,
-    /// };
-    /// assert_eq!(plain.judge(&freezer)?.start, Suffices::NotChecked { missing: "surge rating" });
-    /// let surge = Some(Surge { power: parse("2 kW")?, duration: parse("5 s")? });
-    /// assert!(Inverter { surge, ..plain }.judge(&freezer)?.passes());
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    pub fn judge(&self, demand: &InverterDemand) -> Result<InverterVerdict, Error> {
-        self.check()?;
-        for (name, power) in [
-            ("power", demand.power),
-            ("apparent power", demand.apparent),
-            ("starting power", demand.starting),
-        ] {
-            at_least(name, power, 0.0)?;
-        }
-        let ((power, apparent), heat) = match (demand.ambient, self.derating) {
-            (Some(ambient), Some(_)) => (self.continuous_at(ambient)?, None),
-            (None, Some(_)) => (self.full(), Some("ambient of the inverter")),
-            (_, None) => (self.full(), Some("derating of the inverter in heat")),
-        };
-        Ok(InverterVerdict {
-            power: Suffices::compare(power, demand.power),
-            apparent: Suffices::compare(apparent, demand.apparent),
-            start: self.start(demand, apparent)?,
-            heat,
-        })
-    }
-
-    fn start(&self, demand: &InverterDemand, apparent: Power) -> Result<Suffices, Error> {
-        if demand.starting <= apparent {
-            return Ok(Suffices::Yes { given: apparent, asked: demand.starting });
-        }
-        let Some(surge) = self.surge else { return Ok(Suffices::NotChecked { missing: "surge rating" }) };
-        at_least("surge power", surge.power, 0.0)?;
-        seconds_at_least_0("surge duration", surge.duration)?;
-        if demand.starting > surge.power {
-            return Ok(Suffices::No { given: surge.power, asked: demand.starting });
-        }
-        let Some(asked) = demand.duration else {
-            return Ok(Suffices::NotChecked { missing: "duration of the start" });
-        };
-        seconds_at_least_0("duration of the start", asked)?;
-        Ok(if asked <= surge.duration {
-            Suffices::Yes { given: surge.power, asked: demand.starting }
-        } else {
-            Suffices::TooShort { given: surge.duration, asked }
-        })
+    /// As [`inrush_current`].
+    pub fn inrush(
+        &self,
+        voltage: ElectricPotential,
+        loop_resistance: ElectricalResistance,
+    ) -> Result<Option<Inrush>, Error> {
+        self.input_capacitance
+            .map(|capacitance| inrush_current(voltage, loop_resistance, capacitance))
+            .transpose()
     }
 
     /// Energy of a day on its DC side, idle power included, for a steady load while it is on.
@@ -417,115 +194,25 @@ impl Inverter {
     /// [`Error::OutOfRange`] where the energy is negative, or the hours not above 0 and at most 24.
     pub fn daily_energy(&self, ac_energy: Energy, hours_on: Time) -> Result<Energy, Error> {
         let hours = hours_on.get::<hour>();
-        // Written so that NaN fails.
-        if !(hours > 0.0 && hours <= 24.0) {
-            let allowed = Allowed::AboveUpTo(0.0, 24.0);
-            return Err(Error::OutOfRange { name: "hours_on", value: hours, unit: "h", allowed });
-        }
+        Allowed::AboveUpTo(0.0, 24.0).check("hours_on", hours, "h")?;
         let energy = self.input_power(ac_energy / hours_on)? * hours_on;
-        let value = energy.get::<joule>();
-        if value <= f64::MAX {
-            return Ok(energy);
-        }
-        Err(Error::OutOfRange { name: "energy", value, unit: "J", allowed: Allowed::Finite })
+        Allowed::Finite.check("energy", energy.get::<joule>(), "J")?;
+        Ok(energy)
     }
 
-    fn full(&self) -> (Power, Power) {
+    pub(super) fn full(&self) -> (Power, Power) {
         (self.continuous, self.apparent.unwrap_or(self.continuous))
     }
 
-    fn check(&self) -> Result<(), Error> {
-        above_0("continuous power", self.continuous.get::<watt>(), "W")?;
-        above_0("apparent power", self.apparent.unwrap_or(self.continuous).get::<watt>(), "W")?;
-        at_least("idle power", self.idle, 0.0)?;
-        above_0("lowest voltage", self.lowest_voltage.value, "V")
+    pub(super) fn check(&self) -> Result<(), Error> {
+        Allowed::Above(0.0).check("continuous power", self.continuous.get::<watt>(), "W")?;
+        Allowed::Above(0.0).check("apparent power", self.full().1.get::<watt>(), "W")?;
+        Allowed::AtLeast(0.0).check("idle power", self.idle.get::<watt>(), "W")?;
+        Allowed::Above(0.0).check("lowest voltage", self.lowest_voltage.value, "V")
     }
-}
-
-/// The first inverter of a list that passes, with its place; the list is searched in its order, so the preferred one,
-/// such as the cheapest, comes first.
-///
-/// # Errors
-/// As [`Inverter::judge`]; [`Error::NoneFits`] where none passes. Why one fails, its own [`Inverter::judge`] tells.
-pub fn choose_inverter(
-    offers: &[Inverter],
-    demand: &InverterDemand,
-) -> Result<(usize, InverterVerdict), Error> {
-    for (place, offer) in offers.iter().enumerate() {
-        let verdict = offer.judge(demand)?;
-        if verdict.passes() {
-            return Ok((place, verdict));
-        }
-    }
-    Err(Error::NoneFits {
-        what: "inverter",
-        remedy: "take a larger one, or one with a longer surge, or start the largest load while others are off",
-    })
-}
-
-fn above_up_to(name: &'static str, value: f64, most: f64) -> Result<(), Error> {
-    // Written so that NaN fails.
-    if value > 0.0 && value <= most {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "", allowed: Allowed::AboveUpTo(0.0, most) })
-}
-
-fn above_0(name: &'static str, value: f64, unit: &'static str) -> Result<(), Error> {
-    if value > 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit, allowed: Allowed::Above(0.0) })
-}
-
-fn at_least(name: &'static str, power: Power, least: f64) -> Result<(), Error> {
-    let value = power.get::<watt>();
-    if value >= least && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "W", allowed: Allowed::AtLeast(least) })
-}
-
-fn seconds_at_least_0(name: &'static str, time: Time) -> Result<(), Error> {
-    let value = time.get::<second>();
-    if value >= 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "s", allowed: Allowed::AtLeast(0.0) })
 }
 
 calculations! {
-    /// Part of its power that a converter still delivers in heat, by its maker's figures.
-    ///
-    /// # Example
-    /// Full power up to 25 °C, 1 % less for each kelvin above, off above 60 °C; at 40 °C:
-    /// ```
-    /// use ampwright::{converter::heat_factor, quantity::{parse, readable}};
-    /// let at = |ambient| heat_factor(parse(ambient)?, parse("25 degC")?, parse("1 %/K")?, parse("60 degC")?);
-    /// assert_eq!(readable(at("40 degC")?).to_string(), "0.85");
-    /// assert_eq!(readable(at("61 degC")?).to_string(), "0");
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    fn heat_factor(
-        /// Around the converter: in the box, not outside of it.
-        ambient: ThermodynamicTemperature in degree_celsius [-90.0 ..= 150.0],
-        /// Full power up to here.
-        from: ThermodynamicTemperature in degree_celsius [-90.0 ..= 150.0],
-        /// Part lost for each kelvin above.
-        per_kelvin: RatioPerTemperature in per_kelvin [0.0 ..= 1.0],
-        /// Above this it is off.
-        greatest: ThermodynamicTemperature in degree_celsius [-90.0 ..= 150.0],
-    ) -> factor: Ratio in ratio
-    where (from <= greatest) from in degree_celsius: "it must not be above greatest"
-    formula "k = 1 − c·(θ − θ₀) above θ₀, at least 0; 1 below; 0 above the greatest"
-    source "form in which makers state it"
-    {
-        let above = (ambient.value - from.value).max(0.0);
-        let lost = per_kelvin * TemperatureInterval::new::<uom::si::temperature_interval::kelvin>(above);
-        let runs: f64 = if ambient <= greatest { 1.0 } else { 0.0 };
-        Ratio::new::<ratio>((1.0f64 - lost.value).clamp(0.0, 1.0) * runs)
-    }
-
     /// Energy of a day on an inverter's DC side, idle power included.
     ///
     /// For any load profile, as long as one figure of efficiency is all that is known: its input is then a straight line
@@ -566,5 +253,114 @@ calculations! {
         let converted = ac_energy / efficiency;
         let idle = idle_power * (hours_on - ac_energy / rated_power).max(Time::new::<second>(0.0));
         InverterDay { converted, idle, total: converted + idle }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::energy::watt_hour;
+
+    use super::*;
+    use crate::quantity::parse;
+
+    fn inverter(watts: f64, efficiency: f64, idle: f64) -> Inverter {
+        let w = Power::new::<watt>;
+        Inverter::plain(w(watts), Ratio::new::<ratio>(efficiency), w(idle), parse("10.5 V").unwrap()).unwrap()
+    }
+
+    #[test]
+    fn at_full_load_the_feed_of_the_circuit_and_ours_are_one() {
+        // 800/0.85/10.5, the figure of R3.
+        let current = inverter(800.0, 0.85, 20.0).greatest_input_current(parse("800 W").unwrap()).unwrap();
+        assert!((current.value - 800.0 / 0.85 / 10.5).abs() < 1e-12);
+    }
+
+    #[test]
+    fn the_point_at_the_end_of_a_line_balances() {
+        let inverter = inverter(1000.0, 0.9, 20.0);
+        let (u, r) = (parse("12 V").unwrap(), parse("5 mohm").unwrap());
+        let point = inverter.at_end_of_line(parse("500 W").unwrap(), u, r).unwrap();
+        assert!((point.voltage * point.current / point.power).value - 1.0 < 1e-12);
+        assert!((12.0 - 0.005 * point.current.value - point.voltage.value).abs() < 1e-9);
+        assert!(!point.trips);
+        let weak = parse("40 mohm").unwrap();
+        assert!(matches!(
+            inverter.at_end_of_line(parse("1 kW").unwrap(), u, weak),
+            Err(Error::NoSolution { .. })
+        ));
+    }
+
+    #[test]
+    fn inrush_is_not_told_without_the_capacitance() {
+        let plain = inverter(1000.0, 0.9, 20.0);
+        let (u, r) = (parse("26 V").unwrap(), parse("10 mohm").unwrap());
+        assert_eq!(plain.inrush(u, r), Ok(None));
+        let known = Inverter { input_capacitance: Some(parse("10 mF").unwrap()), ..plain };
+        assert!((known.inrush(u, r).unwrap().unwrap().peak.value - 2600.0).abs() < 1e-9);
+    }
+
+    proptest! {
+        /// The closed form of the catalogue against the curve, hour by hour, for any profile of 24 loads.
+        #[test]
+        fn a_day_of_any_profile_is_the_closed_form(
+            loads in proptest::collection::vec(0.0..1000.0f64, 24),
+            efficiency in 0.5..0.97f64,
+            idle in 0.0..30.0f64,
+        ) {
+            // Idle losses within those at full load, as the closed form takes them.
+            prop_assume!(idle <= 1000.0 / efficiency - 1000.0);
+            let inverter = inverter(1000.0, efficiency, idle);
+            let day: f64 = loads.iter().map(|&w| inverter.input_power(Power::new::<watt>(w)).unwrap().value).sum();
+            let closed = inverter_daily_energy(
+                Energy::new::<watt_hour>(loads.iter().sum()),
+                Time::new::<hour>(24.0),
+                inverter.continuous,
+                Ratio::new::<ratio>(efficiency),
+                inverter.idle,
+            ).unwrap();
+            prop_assert!((closed.total.get::<watt_hour>() / day - 1.0).abs() < 1e-12);
+            prop_assert!((closed.idle + closed.converted - closed.total).value.abs() <= 1e-6);
+        }
+    }
+
+    #[test]
+    fn a_steady_day_is_its_hours_times_the_input() {
+        let inverter = inverter(1000.0, 0.9, 20.0);
+        let day = inverter.daily_energy(parse("1200 Wh").unwrap(), parse("24 h").unwrap()).unwrap();
+        let steady = inverter.input_power(parse("50 W").unwrap()).unwrap();
+        assert!((day.get::<watt_hour>() - 24.0 * steady.value).abs() < 1e-9);
+        for hours in ["0 h", "25 h", "-1 h"] {
+            assert!(inverter.daily_energy(parse("1 Wh").unwrap(), parse(hours).unwrap()).is_err());
+        }
+        // Nothing delivered: idle alone. More than it can deliver in these hours is an error of the closed form.
+        let idle = inverter.daily_energy(parse("0 Wh").unwrap(), parse("10 h").unwrap()).unwrap();
+        assert!((idle.get::<watt_hour>() - 200.0).abs() < 1e-9);
+        assert!(
+            inverter_daily_energy(
+                parse("1001 Wh").unwrap(),
+                parse("1 h").unwrap(),
+                parse("1 kW").unwrap(),
+                parse("90 %").unwrap(),
+                parse("20 W").unwrap()
+            )
+            .is_err()
+        );
+    }
+
+    #[test]
+    fn figures_out_of_range_are_errors() {
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -1.0] {
+            let w = Power::new::<watt>(bad);
+            let good = inverter(1000.0, 0.9, 20.0);
+            assert!(good.input_power(w).is_err() && good.efficiency_at(w).is_err(), "{bad}");
+            assert!(Inverter { idle: w, ..good }.input_power(good.idle).is_err(), "{bad}");
+            assert!(Inverter { continuous: w, ..good }.input_power(good.idle).is_err(), "{bad}");
+            let voltage = ElectricPotential::new::<uom::si::electric_potential::volt>(bad);
+            assert!(Inverter { lowest_voltage: voltage, ..good }.input_power(good.idle).is_err(), "{bad}");
+            assert!(good.daily_energy(Energy::new::<joule>(bad), parse("1 h").unwrap()).is_err(), "{bad}");
+        }
+        // Larger than any number.
+        assert!(inverter(1000.0, 0.9, 20.0).input_power(Power::new::<watt>(f64::MAX)).is_err());
     }
 }

@@ -123,3 +123,77 @@ fn heat(ambient: ThermodynamicTemperature, heat_loss: RatioPerTemperature) -> Ra
     let above = (ambient.value - (FROM_degC + 273.15)).max(0.0);
     Ratio::new::<ratio>(1.0) - heat_loss * TemperatureInterval::new::<kelvin>(above)
 }
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::power::watt;
+
+    use super::*;
+    use crate::quantity::parse;
+
+    fn feet(h: f64) -> f64 {
+        altitude_factor(Length::new::<foot>(h)).unwrap().value
+    }
+
+    #[test]
+    fn the_two_slopes_meet_at_six_thousand_feet() {
+        // By hand: 3 % for each of six thousands, then 6 %.
+        for (h, factor) in
+            [(-1000.0, 1.0), (0.0, 1.0), (1000.0, 0.97), (6000.0, 0.82), (7000.0, 0.76), (10_000.0, 0.58)]
+        {
+            assert!((feet(h) - factor).abs() < 1e-12, "{h} ft: {}", feet(h));
+        }
+        assert!(feet(18_000.0) > 0.0);
+    }
+
+    proptest! {
+        #[test]
+        fn needed_and_derated_power_undo_each_other(
+            watts in 100.0..1e5f64, h in -500.0..5500.0f64, celsius in -40.0..60.0f64, loss in 0.0..0.01f64,
+        ) {
+            let altitude = Length::new::<uom::si::length::meter>(h);
+            let ambient = ThermodynamicTemperature::new::<uom::si::thermodynamic_temperature::degree_celsius>(celsius);
+            let loss = RatioPerTemperature::new::<uom::si::temperature_coefficient::per_kelvin>(loss);
+            let one = Ratio::new::<ratio>(1.0);
+            let needed =
+                generator_needed_power(Power::new::<watt>(watts), one, one, altitude, ambient, loss).unwrap();
+            let given = generator_derated_power(needed.real, altitude, ambient, loss).unwrap();
+            prop_assert!((given.power.value / watts - 1.0).abs() < 1e-12);
+            // Neither mountain nor heat adds anything, and something is always left.
+            prop_assert!(given.power <= needed.real && given.power.value > 0.0);
+            prop_assert!(given.altitude_factor.value <= 1.0 && given.heat_factor.value <= 1.0);
+        }
+
+        #[test]
+        fn higher_and_hotter_never_give_more(a in -500.0..5500.0f64, b in -500.0..5500.0f64) {
+            let at = |h: f64| altitude_factor(Length::new::<uom::si::length::meter>(h)).unwrap().value;
+            prop_assert!(at(a.max(b)) <= at(a.min(b)));
+        }
+    }
+
+    #[test]
+    fn heat_counts_from_25_degrees_on() {
+        let at = |ambient: &str| {
+            let level = parse("0 m").unwrap();
+            generator_derated_power(
+                parse("1 kW").unwrap(),
+                level,
+                parse(ambient).unwrap(),
+                parse("0.4 %/K").unwrap(),
+            )
+            .unwrap()
+            .power
+            .value
+        };
+        assert!((at("25 degC") - 1000.0).abs() < 1e-9 && (at("-30 degC") - 1000.0).abs() < 1e-9);
+        assert!((at("30 degC") - 980.0).abs() < 1e-9);
+    }
+
+    #[test]
+    fn beyond_the_ranges_nothing_is_answered() {
+        for bad in [f64::NAN, f64::INFINITY, 5501.0, -501.0] {
+            assert!(altitude_factor(Length::new::<uom::si::length::meter>(bad)).is_err(), "{bad}");
+        }
+    }
+}

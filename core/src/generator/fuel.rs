@@ -1,6 +1,6 @@
 //! Fuel of engine sets: a published chart for diesel, or the maker's figures.
 
-use uom::si::power::kilowatt;
+use uom::si::power::{kilowatt, watt};
 use uom::si::time::hour;
 use uom::si::volume::liter;
 
@@ -76,10 +76,7 @@ impl FuelCurve {
     /// row and the maker's figures are needed, and above 500 kW.
     pub fn diesel(rating: Power) -> Result<Self, Error> {
         let kilowatts = rating.get::<kilowatt>();
-        if !(kilowatts > 0.0 && kilowatts <= f64::MAX) {
-            let (value, allowed) = (kilowatts, Allowed::Above(0.0));
-            return Err(Error::OutOfRange { name: "rated_power", value, unit: "kW", allowed });
-        }
+        Allowed::Above(0.0).check("rated_power", kilowatts, "kW")?;
         let ends = |end| Error::TableEnds {
             what: "rated power of the engine set",
             value: kilowatts,
@@ -115,28 +112,14 @@ impl FuelCurve {
                 needed: Self::ROOM,
             });
         }
-        let watts = rating.get::<uom::si::power::watt>();
-        if !(watts > 0.0 && watts <= f64::MAX) {
-            return Err(Error::OutOfRange {
-                name: "rating",
-                value: watts,
-                unit: "W",
-                allowed: Allowed::Above(0.0),
-            });
-        }
+        Allowed::Above(0.0).check("rating", rating.get::<watt>(), "W")?;
         let citation = Citation::new("as stated", "fuel of the engine set", Seen::Stated);
         let mut curve = Self { rating, points: [(0.0, 0.0); Self::ROOM], count: points.len(), citation };
         let mut before = (-1.0, 0.0);
         for (cell, &(load, fuel)) in curve.points.iter_mut().zip(points) {
             let (load, fuel) = (load.value, litres_per_hour(fuel));
-            if !(0.0..=1.2).contains(&load) {
-                let allowed = Allowed::Between(0.0, 1.2);
-                return Err(Error::OutOfRange { name: "load", value: load, unit: "", allowed });
-            }
-            if !(fuel > 0.0 && fuel <= f64::MAX) {
-                let allowed = Allowed::Above(0.0);
-                return Err(Error::OutOfRange { name: "fuel", value: fuel, unit: "L/h", allowed });
-            }
+            Allowed::Between(0.0, 1.2).check("load", load, "")?;
+            Allowed::Above(0.0).check("fuel", fuel, "L/h")?;
             if load <= before.0 || fuel < before.1 {
                 let why = "loads must rise, and fuel must not fall with them";
                 return Err(Error::Contradiction { name: "load", value: load, unit: "", why });
@@ -164,21 +147,16 @@ impl FuelCurve {
     ///
     /// # Example
     /// ```
-    /// use ampwright::{generator::FuelCurve, quantity::parse};
-    /// let small = FuelCurve::stated(parse("5 kW")?, &[(parse("50 %")?, parse("1.1 L/h")?), (parse("100 %")?, parse("1.9 L/h")?)])?;
-    /// assert!((small.at(parse("3.75 kW")?)?.value - ampwright::quantity::parse::<ampwright::quantity::VolumeFlow>("1.5 L/h")?.value).abs() < 1e-12);
+    /// use ampwright::{generator::FuelCurve, quantity::{Time, parse, readable}};
+    /// let points = [(parse("50 %")?, parse("1.1 L/h")?), (parse("100 %")?, parse("1.9 L/h")?)];
+    /// let small = FuelCurve::stated(parse("5 kW")?, &points)?;
+    /// let an_hour = small.at(parse("3.75 kW")?)? * parse::<Time>("1 h")?;
+    /// assert_eq!(readable(an_hour).to_string(), "1.5 L");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     pub fn at(&self, output: Power) -> Result<VolumeFlow, Error> {
-        let watts = output.get::<uom::si::power::watt>();
-        if !(watts >= 0.0 && watts <= f64::MAX) {
-            return Err(Error::OutOfRange {
-                name: "output power",
-                value: watts,
-                unit: "W",
-                allowed: Allowed::AtLeast(0.0),
-            });
-        }
+        let watts = output.get::<watt>();
+        Allowed::AtLeast(0.0).check("output power", watts, "W")?;
         let load = (output / self.rating).value;
         let litres = self.litres_per_hour(load).ok_or(Error::Contradiction {
             name: "output power",
@@ -189,7 +167,7 @@ impl FuelCurve {
         Ok(Volume::new::<liter>(litres) / Time::new::<hour>(1.0))
     }
 
-    /// Lines of the curve within a range of loads: from, to, fuel there at the load's lower end, slope.
+    /// Fuel at a load, both in parts; `None` above the last point.
     pub(super) fn litres_per_hour(&self, load: f64) -> Option<f64> {
         let points = self.points.get(..self.count).unwrap_or_default();
         let (mut low, mut first) = ((0.0, 0.0), true);
@@ -232,8 +210,8 @@ calculations! {
     /// # Ok::<(), ampwright::Error>(())
     /// ```
     fn fuel_consumption(
-        /// Of the set.
-        rated_power: Power in watt [> 0.0],
+        /// Of the set; of a smaller or larger one the chart says nothing.
+        rated_power: Power in watt [20000.0 ..= 500000.0],
         /// Delivered.
         output_power: Power in watt [>= 0.0],
         /// At this load.
@@ -243,6 +221,106 @@ calculations! {
     formula "V = v(P/P_row)·t, v linear between ¼, ½, ¾ and 1 of the row's rating, v(¼) below"
     source "a power rental company's chart of 20 to 500 kW (approximate); that lines may be drawn between its columns is common \
         practice, no source"
-    fallible "the rating is below 20 or above 500 kW"
-    { FuelCurve::diesel(rated_power)?.at(output_power).map(|flow| flow * duration) }
+    {
+        let flow = FuelCurve::diesel(rated_power).and_then(|curve| curve.at(output_power));
+        // Within the ranges there always is one.
+        Volume::new::<liter>(flow.map_or(f64::NAN, litres_per_hour) * duration.get::<hour>())
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::string::ToString;
+
+    use proptest::prelude::*;
+    use uom::si::ratio::ratio;
+
+    use super::*;
+
+    fn kw(kilowatts: f64) -> Power {
+        Power::new::<kilowatt>(kilowatts)
+    }
+
+    fn flow(litres: f64) -> VolumeFlow {
+        Volume::new::<liter>(litres) / Time::new::<hour>(1.0)
+    }
+
+    fn stated(points: &[(f64, f64)]) -> Result<FuelCurve, Error> {
+        let points: std::vec::Vec<_> =
+            points.iter().map(|&(load, fuel)| (Ratio::new::<ratio>(load), flow(fuel))).collect();
+        FuelCurve::stated(kw(5.0), &points)
+    }
+
+    #[test]
+    fn rows_and_columns_rise_as_they_were_printed() {
+        for pair in DIESEL.windows(2) {
+            assert!(pair[0].rating_kW < pair[1].rating_kW);
+            for (smaller, larger) in pair[0].fuel_L_per_h.iter().zip(pair[1].fuel_L_per_h) {
+                assert!(*smaller < larger);
+            }
+        }
+        for row in DIESEL {
+            assert!(row.fuel_L_per_h.windows(2).all(|pair| pair[0] < pair[1]), "{} kW", row.rating_kW);
+        }
+    }
+
+    #[test]
+    fn a_rating_between_two_rows_takes_the_larger() {
+        let of = |rating: f64, load: f64| {
+            litres_per_hour(FuelCurve::diesel(kw(rating)).unwrap().at(kw(load)).unwrap())
+        };
+        assert!((of(20.0, 10.0) - 3.4).abs() < 1e-12);
+        // 20.1 kW takes the row of 30 kW: 15 kW are half of it.
+        assert!((of(20.1, 15.0) - 6.8).abs() < 1e-12);
+        // Below a quarter the figure of a quarter.
+        assert!((of(20.0, 0.0) - 2.7).abs() < 1e-12 && (of(20.0, 5.0) - 2.7).abs() < 1e-12);
+        let small = FuelCurve::diesel(kw(19.9)).unwrap_err().to_string();
+        assert!(small.contains("begins at 20 kW; use the maker's"), "{small}");
+        assert!(FuelCurve::diesel(kw(500.1)).unwrap_err().to_string().contains("ends at 500 kW"));
+        assert_eq!(FuelCurve::diesel(kw(20.0)).unwrap().citation().seen, Seen::Page);
+    }
+
+    #[test]
+    fn curves_that_make_no_sense_are_refused() {
+        assert!(stated(&[(0.25, 0.8), (1.0, 1.9)]).is_ok());
+        for bad in
+            [&[][..], &[(0.5, 1.0), (0.5, 1.1)], &[(0.5, 1.0), (1.0, 0.9)], &[(1.3, 1.0)], &[(0.5, 0.0)]]
+        {
+            assert!(stated(bad).is_err(), "{bad:?}");
+        }
+        assert!(stated(&[(0.1, 1.0); 9]).is_err());
+        for bad in [f64::NAN, f64::INFINITY, -1.0] {
+            assert!(stated(&[(bad, 1.0)]).is_err() && stated(&[(0.5, bad)]).is_err(), "{bad}");
+            assert!(FuelCurve::diesel(kw(bad)).is_err() && FuelCurve::stated(kw(bad), &[]).is_err(), "{bad}");
+            assert!(stated(&[(1.0, 1.0)]).unwrap().at(kw(bad)).is_err(), "{bad}");
+        }
+        assert!(matches!(
+            stated(&[(0.5, 1.0)]).unwrap().at(kw(2.6)),
+            Err(Error::Contradiction { name: "output power", .. })
+        ));
+    }
+
+    proptest! {
+        #[test]
+        fn more_load_never_burns_less(rating in 20.0..500.0f64, a in 0.0..=1.0f64, b in 0.0..=1.0f64) {
+            let curve = FuelCurve::diesel(kw(rating)).unwrap();
+            let at = |part: f64| litres_per_hour(curve.at(kw(part * rating)).unwrap());
+            prop_assert!(at(a.min(b)) <= at(a.max(b)) + 1e-12);
+            // The catalogue's function for two hours.
+            let two =
+                fuel_consumption(kw(rating), kw(a * rating), Time::new::<hour>(2.0)).unwrap().get::<liter>();
+            prop_assert!((two - 2.0 * at(a)).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn no_set_delivers_more_than_its_rating() {
+        let one = Time::new::<hour>(1.0);
+        assert!(fuel_consumption(kw(25.0), kw(25.1), one).is_err());
+        assert!(matches!(
+            fuel_consumption(kw(5.0), kw(4.0), one),
+            Err(Error::OutOfRange { name: "rated_power", .. })
+        ));
+    }
 }

@@ -75,19 +75,16 @@ pub fn engine_run(
     let bulk = full_rate * time.bulk.get::<hour>();
     let tail = match recharge.knee {
         Some(knee) if time.tail.value > 0.0 => {
-            let begin = (1.0 - recharge.start.value) / (1.0 - knee.value);
-            // Above the knee from the beginning, the current begins as the sources give it all the same: see the law.
-            let part = begin.min(1.0);
-            let end = part * (1.0 - recharge.target.value) / (1.0 - knee.value.max(recharge.start.value));
-            let decay = time.tail.get::<hour>() / libm::log(part / end);
-            tail_fuel(fuel, charging, other, (part, end), decay)
+            // In the tail the current is what is missing from full, over what was missing at the knee.
+            let part = |state: f64| (1.0 - state) / (1.0 - knee.value);
+            let (from, to) = (part(knee.value.max(recharge.start.value)), part(recharge.target.value));
+            let decay = time.tail.get::<hour>() / libm::log(from / to);
+            tail_fuel(fuel, charging, other, (from, to), decay)
         }
         _ => 0.0,
     };
     let litres = bulk + tail;
-    if !litres.is_finite() {
-        return Err(Error::OutOfRange { name: "fuel", value: litres, unit: "L", allowed: Allowed::Finite });
-    }
+    Allowed::Finite.check("fuel", litres, "L")?;
     Ok(EngineRun { bulk: time.bulk, tail: time.tail, total: time.total, fuel: Volume::new::<liter>(litres) })
 }
 
@@ -108,13 +105,7 @@ impl Recharge {
                 self.efficiency,
             );
         }
-        let within = |name, part: Ratio| {
-            if (0.0..=1.0).contains(&part.value) {
-                return Ok(());
-            }
-            let allowed = Allowed::Between(0.0, 1.0);
-            Err(Error::OutOfRange { name, value: part.value, unit: "", allowed })
-        };
+        let within = |name, part: Ratio| Allowed::Between(0.0, 1.0).check(name, part.value, "");
         within("start", self.start)?;
         within("target", self.target)?;
         if self.start > self.target {
@@ -159,9 +150,103 @@ fn tail_fuel(fuel: &FuelCurve, charging: Power, other: Power, (from, to): (f64, 
 /// [`Error::OutOfRange`] where the hours are negative or not finite, and as [`FuelCurve::at`].
 pub fn fuel_for(fuel: &FuelCurve, output: Power, duration: Time) -> Result<Volume, Error> {
     let hours = duration.get::<hour>();
-    if !(hours >= 0.0 && hours <= f64::MAX) {
-        let allowed = Allowed::AtLeast(0.0);
-        return Err(Error::OutOfRange { name: "duration", value: hours, unit: "h", allowed });
-    }
+    Allowed::AtLeast(0.0).check("duration", hours, "h")?;
     Ok(fuel.at(output)? * duration)
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::electric_charge::ampere_hour;
+    use uom::si::electric_current::ampere;
+    use uom::si::power::watt;
+    use uom::si::ratio::ratio;
+
+    use super::*;
+    use crate::quantity::{VolumeFlow, parse};
+
+    fn part(x: f64) -> Ratio {
+        Ratio::new::<ratio>(x)
+    }
+
+    fn curve() -> FuelCurve {
+        let flow = |text| parse::<VolumeFlow>(text).unwrap();
+        let points = [(0.25, "0.8 L/h"), (0.5, "1.1 L/h"), (0.75, "1.5 L/h"), (1.0, "2.1 L/h")];
+        FuelCurve::stated(parse("5 kW").unwrap(), &points.map(|(load, fuel)| (part(load), flow(fuel))))
+            .unwrap()
+    }
+
+    fn recharge(start: f64, target: f64, knee: f64) -> Recharge {
+        Recharge {
+            capacity: ElectricCharge::new::<ampere_hour>(400.0),
+            current: ElectricCurrent::new::<ampere>(50.0),
+            start: part(start),
+            target: part(target),
+            knee: Some(part(knee)),
+            efficiency: part(0.85),
+        }
+    }
+
+    /// Midpoint steps through the state of charge: hours and litres until the target is passed.
+    fn integrated(start: f64, target: f64, knee: f64, charging: f64, other: f64) -> (f64, f64) {
+        let (fuel, slope, step) = (curve(), 0.85 * 50.0 / 400.0, 1e-4);
+        let share = |s: f64| if s < knee { 1.0 } else { (1.0 - s) / (1.0 - knee) };
+        let (mut s, mut hours, mut litres) = (start, 0.0, 0.0);
+        while s < target {
+            let middle = s + 0.5 * step * slope * share(s);
+            let whole = step * slope * share(middle);
+            let taken = ((target - s) / whole).min(1.0);
+            let load = (charging * share(middle) + other) / 5000.0;
+            litres += taken * step * fuel.litres_per_hour(load).unwrap();
+            hours += taken * step;
+            s += whole;
+        }
+        (hours, litres)
+    }
+
+    proptest! {
+        #![proptest_config(ProptestConfig::with_cases(32))]
+        #[test]
+        fn time_and_fuel_are_the_integral(
+            a in 0.0..0.97f64, b in 0.0..0.97f64, knee in 0.0..0.95f64, charging in 0.0..4000.0f64, other in 0.0..1000.0f64,
+        ) {
+            let (start, target) = (a.min(b), a.max(b));
+            let w = Power::new::<watt>;
+            let run = engine_run(&recharge(start, target, knee), &curve(), w(charging), w(other)).unwrap();
+            let (hours, litres) = integrated(start, target, knee, charging, other);
+            // One step at the knee, 1e-4 h, at no more than 2.1 L/h; and the same at each corner of the curve.
+            prop_assert!((run.total.get::<hour>() - hours).abs() < 3e-4, "{} {hours}", run.total.get::<hour>());
+            prop_assert!((run.fuel.get::<liter>() - litres).abs() < 1e-3, "{} {litres}", run.fuel.get::<liter>());
+        }
+    }
+
+    #[test]
+    fn without_a_knee_it_is_current_and_fuel_throughout() {
+        let lithium = Recharge { knee: None, ..recharge(0.2, 0.8, 0.5) };
+        let run = engine_run(&lithium, &curve(), parse("2.5 kW").unwrap(), parse("0 W").unwrap()).unwrap();
+        let hours = 0.6 * 400.0 / (0.85 * 50.0);
+        assert!((run.total.get::<hour>() - hours).abs() < 1e-12 && run.tail.value == 0.0);
+        assert!((run.fuel.get::<liter>() - 1.1 * hours).abs() < 1e-12);
+        // Nothing missing takes no time.
+        let full = Recharge { start: part(0.8), ..lithium };
+        assert_eq!(full.time().unwrap().total.value, 0.0);
+        for (start, target) in [(0.9, 0.8), (-0.1, 0.8), (0.1, 1.1), (f64::NAN, 0.8), (0.1, f64::NAN)] {
+            let wrong = Recharge { start: part(start), target: part(target), ..lithium };
+            assert!(wrong.time().is_err(), "{start} to {target}");
+        }
+    }
+
+    #[test]
+    fn more_than_the_set_gives_is_refused_and_so_is_less_than_nothing() {
+        let w = Power::new::<watt>;
+        let run = |charging, other| engine_run(&recharge(0.5, 0.9, 0.8), &curve(), w(charging), w(other));
+        assert!(run(5000.0, 0.0).is_ok() && run(4000.0, 1000.0).is_ok());
+        assert!(run(4000.0, 1001.0).is_err());
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -1.0] {
+            assert!(run(bad, 100.0).is_err() && run(100.0, bad).is_err(), "{bad}");
+        }
+        assert!(fuel_for(&curve(), w(2500.0), Time::new::<hour>(-1.0)).is_err());
+        let day = fuel_for(&curve(), w(2500.0), Time::new::<hour>(3.0)).unwrap();
+        assert!((day.get::<liter>() - 3.3).abs() < 1e-12);
+    }
 }

@@ -40,15 +40,12 @@ pub enum LoadDump {
 }
 
 impl SourceKind {
-    /// What is taken where nothing is stated: a turbine, a bare alternator without load have no limit of their own, a
-    /// converter holds its voltage.
-    ///
-    /// Common practice, no source. An array's controller is not taken to bear it: makers warn of it.
+    /// What is taken where nothing is stated: machines that turn drive the voltage up when their load is gone; of the
+    /// rest it is not known. Common practice, no source.
     pub const fn usual_load_dump(self) -> LoadDump {
         match self {
             Self::Alternator | Self::Wind | Self::Hydro => LoadDump::DoesNotBear,
-            Self::Array => LoadDump::Unknown,
-            Self::EngineSet | Self::Shore | Self::Converter => LoadDump::Bears,
+            Self::Array | Self::EngineSet | Self::Shore | Self::Converter => LoadDump::Unknown,
         }
     }
 }
@@ -145,10 +142,7 @@ impl ChargeSource {
             SourceKind::Alternator => ALTERNATOR_HOT,
             _ => 1.0,
         }));
-        if !(0.0..=1.0).contains(&part.value) {
-            let allowed = Allowed::Between(0.0, 1.0);
-            return Err(Error::OutOfRange { name: "lasting part", value: part.value, unit: "", allowed });
-        }
+        Allowed::Between(0.0, 1.0).check("lasting part", part.value, "")?;
         let mut greatest = (self.nameplate, LimitedBy::Nameplate);
         let mut lasting = (self.nameplate * part, LimitedBy::Lasting);
         if lasting.0 == self.nameplate {
@@ -195,12 +189,7 @@ pub fn source_sum(sources: &[ChargeSource], into: &mut [Contribution]) -> Result
 }
 
 fn at_least_0(name: &'static str, current: ElectricCurrent) -> Result<(), Error> {
-    let value = current.get::<ampere>();
-    // Written so that NaN fails.
-    if value >= 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "A", allowed: Allowed::AtLeast(0.0) })
+    Allowed::AtLeast(0.0).check(name, current.get::<ampere>(), "A")
 }
 
 calculations! {
@@ -224,4 +213,105 @@ calculations! {
     formula "I = k·I_n"
     source "50 to 60 % of nameplate hot: common practice, no source"
     { nameplate_current * hot_part }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use std::vec::Vec;
+
+    use proptest::prelude::*;
+
+    use super::*;
+
+    fn a(amperes: f64) -> ElectricCurrent {
+        ElectricCurrent::new::<ampere>(amperes)
+    }
+
+    fn nothing() -> Contribution {
+        ChargeSource::new(SourceKind::Shore, a(0.0)).contribution(0).unwrap()
+    }
+
+    #[test]
+    fn a_controller_limits_what_lies_behind_it() {
+        let array =
+            ChargeSource { controller_limit: Some(a(30.0)), ..ChargeSource::new(SourceKind::Array, a(41.0)) };
+        let given = array.contribution(3).unwrap();
+        assert_eq!((given.greatest, given.greatest_by, given.place), (a(30.0), LimitedBy::Controller, 3));
+        assert_eq!((given.lasting, given.lasting_by), (a(30.0), LimitedBy::Controller));
+        // A hot alternator below the limit of its converter, a cold one above it.
+        let alternator = ChargeSource {
+            controller_limit: Some(a(60.0)),
+            ..ChargeSource::new(SourceKind::Alternator, a(100.0))
+        };
+        let given = alternator.contribution(0).unwrap();
+        assert_eq!((given.greatest, given.greatest_by), (a(60.0), LimitedBy::Controller));
+        assert_eq!((given.lasting, given.lasting_by), (a(50.0), LimitedBy::Lasting));
+        // Stated to last: its plate.
+        let cool =
+            ChargeSource { lasting: Some(Ratio::new::<ratio>(1.0)), controller_limit: None, ..alternator };
+        assert_eq!(cool.contribution(0).unwrap().lasting_by, LimitedBy::Nameplate);
+    }
+
+    #[test]
+    fn nothing_bears_a_load_dump_unless_it_is_stated() {
+        let kinds = [
+            SourceKind::Array,
+            SourceKind::Alternator,
+            SourceKind::EngineSet,
+            SourceKind::Shore,
+            SourceKind::Wind,
+            SourceKind::Hydro,
+            SourceKind::Converter,
+        ];
+        for kind in kinds {
+            assert_ne!(kind.usual_load_dump(), LoadDump::Bears);
+            let stated =
+                ChargeSource { load_dump: Some(LoadDump::Bears), ..ChargeSource::new(kind, a(10.0)) };
+            assert_eq!(stated.contribution(0).unwrap().load_dump, LoadDump::Bears);
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn the_sum_is_that_of_its_parts_and_lasting_never_exceeds_the_greatest(
+            given in proptest::collection::vec((0.0..500.0f64, proptest::option::of(0.0..500.0f64), 0.0..=1.0f64), 0..8),
+        ) {
+            let sources: Vec<_> = given
+                .iter()
+                .map(|&(plate, limit, part)| ChargeSource {
+                    controller_limit: limit.map(a),
+                    lasting: Some(Ratio::new::<ratio>(part)),
+                    ..ChargeSource::new(SourceKind::Wind, a(plate))
+                })
+                .collect();
+            let mut parts = std::vec![nothing(); sources.len()];
+            let sum = source_sum(&sources, &mut parts).unwrap();
+            let (mut greatest, mut lasting) = (a(0.0), a(0.0));
+            for (part, &(plate, limit, _)) in parts.iter().zip(&given) {
+                prop_assert!(part.lasting <= part.greatest);
+                prop_assert!((part.greatest.value - limit.unwrap_or(f64::MAX).min(plate)).abs() == 0.0);
+                greatest += part.greatest;
+                lasting += part.lasting;
+            }
+            prop_assert_eq!((sum.greatest, sum.lasting), (greatest, lasting));
+        }
+    }
+
+    #[test]
+    fn what_does_not_fit_is_an_error() {
+        let source = ChargeSource::new(SourceKind::Shore, a(30.0));
+        assert!(matches!(source_sum(&[source], &mut []), Err(Error::WrongCount { .. })));
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -1.0] {
+            assert!(ChargeSource { nameplate: a(bad), ..source }.contribution(0).is_err(), "{bad}");
+            assert!(
+                ChargeSource { controller_limit: Some(a(bad)), ..source }.contribution(0).is_err(),
+                "{bad}"
+            );
+            let lasting = Some(Ratio::new::<ratio>(bad));
+            assert!(ChargeSource { lasting, ..source }.contribution(0).is_err(), "{bad}");
+        }
+        let huge = ChargeSource::new(SourceKind::Shore, a(f64::MAX));
+        assert!(source_sum(&[huge, huge], &mut [nothing(); 2]).is_err());
+    }
 }

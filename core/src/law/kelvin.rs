@@ -90,3 +90,62 @@ calculations! {
         Area::new::<square_meter>(current.get::<ampere>() * sqrt(square))
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::area::square_millimeter;
+    use uom::si::electrical_resistivity::ohm_square_millimeter_per_meter;
+    use uom::si::ratio::ratio;
+    use uom::si::time::hour;
+
+    use super::*;
+
+    proptest! {
+        /// The area against the cost itself: at no area beside it is the year cheaper.
+        #[test]
+        fn beside_the_economic_area_the_year_costs_more(
+            amperes in 1.0..500.0f64, hours in 10.0..8760.0f64, energy in 0.01..5.0f64, metal in 0.001..10.0f64,
+            charge in 0.01..1.0f64, rho in 0.017..0.03f64,
+        ) {
+            let area = economic_area(
+                ElectricCurrent::new::<ampere>(amperes),
+                Time::new::<hour>(hours),
+                EnergyPrice::new(energy).unwrap(),
+                ConductorPrice::new(metal).unwrap(),
+                Ratio::new::<ratio>(charge),
+                ElectricalResistivity::new::<ohm_square_millimeter_per_meter>(rho),
+            ).unwrap().get::<square_millimeter>();
+            let losses = |mm2: f64| amperes * amperes * rho / mm2 * hours / 1000.0 * energy;
+            let cost = |mm2: f64| losses(mm2) + charge * metal * mm2;
+            // Losses cost as much as the charge, which is Kelvin's rule itself.
+            prop_assert!((losses(area) / (charge * metal * area) - 1.0).abs() < 1e-9);
+            for k in [0.5, 0.9, 1.1, 2.0] {
+                prop_assert!(cost(k * area) > cost(area));
+            }
+            // Half or double the area: a quarter more, as the documentation says.
+            prop_assert!((cost(2.0 * area) / cost(area) - 1.25).abs() < 1e-9);
+            prop_assert!((cost(0.5 * area) / cost(area) - 1.25).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn prices_are_not_negative_and_a_conductor_is_not_for_nothing() {
+        for bad in [-1.0, f64::NAN, f64::INFINITY] {
+            assert!(EnergyPrice::new(bad).is_err() && ConductorPrice::new(bad).is_err(), "{bad}");
+        }
+        let area = |conductor: f64| {
+            economic_area(
+                ElectricCurrent::new::<ampere>(10.0),
+                Time::new::<hour>(1000.0),
+                EnergyPrice::new(0.0).unwrap(),
+                ConductorPrice::new(conductor).unwrap(),
+                Ratio::new::<ratio>(0.1),
+                ElectricalResistivity::new::<ohm_square_millimeter_per_meter>(0.0175),
+            )
+        };
+        // Free energy asks for no metal at all: the other checks decide.
+        assert_eq!(area(1.0).unwrap().value, 0.0);
+        assert!(area(0.0).is_err());
+    }
+}

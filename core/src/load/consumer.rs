@@ -3,10 +3,11 @@
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
-use super::coincidence::Occasion;
 use super::duty::Duty;
-use super::schedule::{Schedule, checked_month};
-use super::start::{Start, at_least};
+use super::months::checked_month;
+use super::occasion::Occasion;
+use super::schedule::Schedule;
+use super::start::Start;
 use crate::error::{Allowed, Error};
 use crate::quantity::{
     ElectricCurrent, ElectricPotential, Energy, Power, Ratio, ThermodynamicTemperature, Time,
@@ -34,20 +35,20 @@ impl Draw {
     /// # Errors
     /// [`Error::OutOfRange`] where the voltage is not above 0, or the draw negative or not finite.
     pub fn power_at(self, voltage: ElectricPotential) -> Result<Power, Error> {
-        above_zero("voltage", voltage)?;
+        Allowed::Above(0.0).check("voltage", voltage.get::<volt>(), "V")?;
         let power = match self {
             Self::Power(power) => power,
             Self::Current(current) => {
-                at_least("current", current.value, 0.0, "A")?;
+                Allowed::AtLeast(0.0).check("current", current.value, "A")?;
                 current * voltage
             }
             Self::Resistive { power, at } => {
-                above_zero("voltage at which the power is stated", at)?;
+                Allowed::Above(0.0).check("voltage at which the power is stated", at.get::<volt>(), "V")?;
                 let part = voltage / at;
                 power * part * part
             }
         };
-        at_least("power", power.value, 0.0, "W")?;
+        Allowed::AtLeast(0.0).check("power", power.value, "W")?;
         Ok(power)
     }
 
@@ -67,18 +68,9 @@ impl Draw {
     /// ```
     pub fn current_at(self, voltage: ElectricPotential) -> Result<ElectricCurrent, Error> {
         let current = self.power_at(voltage)? / voltage;
-        at_least("current", current.get::<ampere>(), 0.0, "A")?;
+        Allowed::AtLeast(0.0).check("current", current.get::<ampere>(), "A")?;
         Ok(current)
     }
-}
-
-fn above_zero(name: &'static str, voltage: ElectricPotential) -> Result<(), Error> {
-    let value = voltage.get::<volt>();
-    // Written so that NaN fails.
-    if value > 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit: "V", allowed: Allowed::Above(0.0) })
 }
 
 /// On which side of an inverter a load hangs.
@@ -174,8 +166,13 @@ impl Load {
     /// [`Error::Contradiction`] where an AC load is not stated by its power, or more units start than there are.
     pub fn power_at(&self, voltage: ElectricPotential) -> Result<Power, Error> {
         self.check()?;
-        let power = self.draw.power_at(voltage)? * f64::from(self.count);
-        at_least("power", power.value, 0.0, "W")?;
+        let one = match (self.terminals, self.draw) {
+            // The inverter holds the voltage for which it is stated.
+            (Terminals::Ac { .. }, Draw::Resistive { power, .. }) => Draw::Power(power),
+            (_, draw) => draw,
+        };
+        let power = one.power_at(voltage)? * f64::from(self.count);
+        Allowed::AtLeast(0.0).check("power", power.value, "W")?;
         Ok(power)
     }
 
@@ -185,9 +182,10 @@ impl Load {
     /// # Errors
     /// As [`Load::power_at`].
     pub fn current_at(&self, voltage: ElectricPotential) -> Result<Option<ElectricCurrent>, Error> {
-        let power = self.power_at(voltage)?;
+        let current = self.power_at(voltage)? / voltage;
+        Allowed::AtLeast(0.0).check("current", current.get::<ampere>(), "A")?;
         Ok(match self.terminals {
-            Terminals::Dc => Some(power / voltage),
+            Terminals::Dc => Some(current),
             Terminals::Ac { .. } => None,
         })
     }
@@ -198,10 +196,12 @@ impl Load {
     /// As [`Load::power_at`].
     pub fn apparent_at(&self, voltage: ElectricPotential) -> Result<Power, Error> {
         let power = self.power_at(voltage)?;
-        Ok(match self.terminals {
+        let apparent = match self.terminals {
             Terminals::Dc => power,
             Terminals::Ac { power_factor } => power / power_factor,
-        })
+        };
+        Allowed::AtLeast(0.0).check("apparent power", apparent.value, "W")?;
+        Ok(apparent)
     }
 
     /// What a start adds to the running current, in parts of the running current of all of them; 0 without a start.
@@ -234,7 +234,7 @@ impl Load {
             Day::Mean => self.schedule.mean_hours(),
         };
         let energy = power * (hours * duty);
-        at_least("energy", energy.value, 0.0, "J")?;
+        Allowed::AtLeast(0.0).check("energy", energy.value, "J")?;
         Ok(energy)
     }
 
@@ -264,7 +264,7 @@ impl Load {
     }
 
     fn check(&self) -> Result<(), Error> {
-        at_least("count", f64::from(self.count), 1.0, "")?;
+        Allowed::AtLeast(1.0).check("count", f64::from(self.count), "")?;
         if let Some(start) = self.start {
             start.check()?;
             if start.at_once > self.count {
@@ -277,11 +277,7 @@ impl Load {
             }
         }
         if let Terminals::Ac { power_factor } = self.terminals {
-            // Written so that NaN fails.
-            if !(power_factor.value > 0.0 && power_factor.value <= 1.0) {
-                let (value, allowed) = (power_factor.value, Allowed::AboveUpTo(0.0, 1.0));
-                return Err(Error::OutOfRange { name: "power factor", value, unit: "", allowed });
-            }
+            Allowed::AboveUpTo(0.0, 1.0).check("power factor", power_factor.value, "")?;
             if let Draw::Current(current) = self.draw {
                 return Err(Error::Contradiction {
                     name: "current",
@@ -292,5 +288,140 @@ impl Load {
             }
         }
         Ok(())
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use uom::si::energy::watt_hour;
+    use uom::si::power::watt;
+    use uom::si::ratio::ratio;
+
+    use super::*;
+    use crate::load::{Months, Slot};
+    use crate::quantity::{Textual, parse};
+
+    fn q<Q: Textual>(text: &str) -> Q {
+        parse(text).unwrap()
+    }
+
+    fn lamp() -> Load {
+        Load { count: 3, ..Load::new(Draw::Power(q("10 W"))) }
+    }
+
+    #[test]
+    fn kinds_part_where_the_voltage_does() {
+        let draws = [
+            Draw::Power(q("48 W")),
+            Draw::Current(q("2 A")),
+            Draw::Resistive { power: q("48 W"), at: q("24 V") },
+        ];
+        let watts = |volts: f64| {
+            let voltage = ElectricPotential::new::<volt>(volts);
+            draws.map(|draw| draw.power_at(voltage).unwrap().value)
+        };
+        assert_eq!(watts(24.0), [48.0, 48.0, 48.0]);
+        assert_eq!(watts(12.0), [48.0, 24.0, 12.0]);
+        let amperes = draws.map(|draw| draw.current_at(q("12 V")).unwrap().value);
+        assert_eq!(amperes, [4.0, 2.0, 1.0]);
+    }
+
+    #[test]
+    fn a_resistive_load_behind_an_inverter_does_not_see_the_bank() {
+        let heater = Load {
+            terminals: Terminals::Ac { power_factor: q("1") },
+            ..Load::new(Draw::Resistive { power: q("500 W"), at: q("230 V") })
+        };
+        assert_eq!(heater.power_at(q("21 V")), Ok(q("500 W")));
+        assert_eq!(heater.current_at(q("21 V")), Ok(None));
+    }
+
+    #[test]
+    fn an_energy_is_power_by_hours_by_duty_by_days() {
+        let load = Load {
+            schedule: Schedule::windows(&["22:00-02:00".parse().unwrap()])
+                .unwrap()
+                .on_days(2)
+                .unwrap()
+                .in_months(Months::from_to(11, 1).unwrap()),
+            duty: Duty::constant(q("25 %")).unwrap(),
+            ..lamp()
+        };
+        let at = |month, day| {
+            let conditions = Conditions { month, ambient: q("20 degC"), voltage: q("24 V"), day };
+            load.daily_energy(&conditions).map(|energy| energy.get::<watt_hour>())
+        };
+        // 3 · 10 W · 4 h · 0.25.
+        assert!((at(12, Day::Full).unwrap() - 30.0).abs() < 1e-12);
+        assert!((at(12, Day::Mean).unwrap() - 60.0 / 7.0).abs() < 1e-12);
+        assert_eq!(at(6, Day::Full), Ok(0.0));
+        assert!(at(0, Day::Full).is_err() && at(13, Day::Full).is_err());
+    }
+
+    #[test]
+    fn starts_count_units_that_start_at_once() {
+        let pump = |count, at_once| {
+            let start = Some(Start { multiple: q("4"), duration: None, at_once });
+            Load { count, start, ..Load::new(Draw::Power(q("100 W"))) }.start_extra().map(|part| part.value)
+        };
+        // One of two adds 3 · 100 W to 200 W.
+        assert_eq!(pump(2, 1), Ok(1.5));
+        assert_eq!(pump(2, 2), Ok(3.0));
+        assert!(matches!(pump(2, 3), Err(Error::Contradiction { name: "units that start at once", .. })));
+        assert!(pump(2, 0).is_err());
+        assert_eq!(lamp().start_extra().map(|part| part.value), Ok(0.0));
+    }
+
+    #[test]
+    fn a_load_of_no_duty_in_a_month_does_not_occur_in_it() {
+        let heater =
+            Load { duty: Duty::between(q("0 degC"), q("60 %"), q("15 degC"), q("0 %")).unwrap(), ..lamp() };
+        let mut year = [AmbientRange { least: q("16 degC"), greatest: q("30 degC") }; 12];
+        year[0] = AmbientRange { least: q("-20 degC"), greatest: q("0 degC") };
+        // A single cold night is enough.
+        year[4] = AmbientRange { least: q("14.9 degC"), greatest: q("30 degC") };
+        let occasion = heater.occasion(Some(&year)).unwrap();
+        for month in 1..=12 {
+            assert_eq!(occasion.contains(Slot { month, half_hour: 0 }), month == 1 || month == 5, "{month}");
+        }
+        // Without ambients nothing is left out.
+        assert_eq!(heater.occasion(None), Ok(Occasion::ALWAYS));
+        year[7].greatest = q("200 degC");
+        assert!(heater.occasion(Some(&year)).is_err());
+    }
+
+    #[test]
+    fn three_hours_are_continuous() {
+        let of = |window: &str| {
+            let schedule = Schedule::windows(&[window.parse().unwrap()]).unwrap();
+            Load { schedule, ..lamp() }.is_continuous()
+        };
+        assert!(of("22:30-01:30") && !of("22:30-01:29") && lamp().is_continuous());
+    }
+
+    #[test]
+    fn figures_out_of_range_are_errors() {
+        let volts = ElectricPotential::new::<volt>;
+        for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, -1.0] {
+            let power = Load::new(Draw::Power(Power::new::<watt>(bad)));
+            assert!(power.power_at(q("24 V")).is_err(), "{bad}");
+            assert!(
+                Load::new(Draw::Current(ElectricCurrent::new::<ampere>(bad))).current_at(q("24 V")).is_err()
+            );
+            let at = volts(bad);
+            assert!(Draw::Resistive { power: q("1 W"), at }.power_at(q("24 V")).is_err(), "{bad}");
+            assert!(lamp().power_at(volts(bad)).is_err() && lamp().apparent_at(volts(bad)).is_err(), "{bad}");
+            let terminals = Terminals::Ac { power_factor: Ratio::new::<ratio>(bad) };
+            assert!(Load { terminals, ..lamp() }.apparent_at(q("24 V")).is_err(), "{bad}");
+        }
+        assert!(lamp().power_at(volts(0.0)).is_err());
+        assert!(Load { count: 0, ..lamp() }.power_at(q("24 V")).is_err());
+        let terminals = Terminals::Ac { power_factor: q("0.8") };
+        let reactive = Load { terminals, ..lamp() }.apparent_at(q("24 V")).unwrap();
+        assert_eq!(reactive.get::<watt>(), 37.5);
+        let current = Load { terminals, ..Load::new(Draw::Current(q("1 A"))) };
+        assert!(matches!(current.power_at(q("24 V")), Err(Error::Contradiction { name: "current", .. })));
+        // Larger than any number.
+        assert!(Load::new(Draw::Power(Power::new::<watt>(f64::MAX))).current_at(volts(1e-300)).is_err());
     }
 }

@@ -127,11 +127,7 @@ pub fn energy_by_month(
 }
 
 fn checked(energy: Energy) -> Result<(), Error> {
-    let value = energy.get::<joule>();
-    if value >= 0.0 && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name: "energy", value, unit: "J", allowed: Allowed::AtLeast(0.0) })
+    Allowed::AtLeast(0.0).check("energy", energy.get::<joule>(), "J")
 }
 
 calculations! {
@@ -206,4 +202,120 @@ calculations! {
     formula "s = E_standing/E_total"
     source "definition"
     { standing_energy / total_energy }
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+    use uom::si::energy::watt_hour;
+    use uom::si::power::watt;
+
+    use super::*;
+    use crate::load::{Draw, Duty, Months, Schedule};
+    use crate::quantity::parse;
+
+    extern crate std;
+
+    fn standing(watts: f64, standing: bool) -> Load {
+        Load { standing, ..Load::new(Draw::Power(Power::new::<watt>(watts))) }
+    }
+
+    fn july() -> Conditions {
+        Conditions {
+            month: 7,
+            ambient: parse("25 degC").unwrap(),
+            voltage: parse("24 V").unwrap(),
+            day: Day::Full,
+        }
+    }
+
+    #[test]
+    fn a_list_without_standing_loads_says_so_and_a_fifth_is_not_yet_high() {
+        let of = |loads: &[Load]| energy_of_day(loads, &july()).unwrap();
+        assert_eq!(of(&[]).standing(), Standing::NoneListed);
+        assert_eq!(of(&[standing(10.0, false)]).standing(), Standing::NoneListed);
+        let share = |watts| of(&[standing(10.0, true), standing(watts, false)]).standing();
+        assert_eq!(share(40.0), Standing::Share(Ratio::new::<ratio>(0.2)));
+        assert!(matches!(share(39.9), Standing::HighShare(_)));
+        // A monitor without consumption is listed all the same.
+        assert_eq!(of(&[standing(0.0, true)]).standing(), Standing::Share(Ratio::new::<ratio>(0.0)));
+        // An inverter that idles stands by.
+        let idle = of(&[standing(10.0, false)]).with_idle(parse("240 Wh").unwrap()).unwrap();
+        assert_eq!(idle.standing(), Standing::HighShare(Ratio::new::<ratio>(0.5)));
+        assert!(of(&[]).with_idle(Energy::new::<joule>(f64::NAN)).is_err());
+    }
+
+    proptest! {
+        /// Minute by minute over the week against hours, duty and days.
+        #[test]
+        fn a_weeks_energy_is_that_of_its_minutes(
+            from in 0..1440u16, length in 1..1439u16, days in 1..=7u8, watts in 0.0..2000.0f64, duty in 0.0..=1.0f64,
+        ) {
+            let to = (from + length) % 1440;
+            prop_assume!(from != to);
+            let window = crate::load::Window::minutes(from, to).unwrap();
+            let load = Load {
+                schedule: Schedule::windows(&[window]).unwrap().on_days(days).unwrap(),
+                duty: Duty::constant(Ratio::new::<ratio>(duty)).unwrap(),
+                ..standing(watts, false)
+            };
+            let mut week = 0.0;
+            for day in 0..7 {
+                for minute in 0..1440u16 {
+                    let inside = if from < to { minute >= from && minute < to } else { minute >= from || minute < to };
+                    if day < days && inside {
+                        week += watts * duty / 60.0;
+                    }
+                }
+            }
+            let mean = energy_of_day(&[load], &Conditions { day: Day::Mean, ..july() }).unwrap().dc;
+            prop_assert!((7.0 * mean.get::<watt_hour>() - week).abs() <= 1e-9 * week.max(1.0));
+            // The catalogue's closed form says the same.
+            let scalar = daily_energy(
+                Power::new::<watt>(watts),
+                load.schedule.hours_on_a_day(),
+                Ratio::new::<ratio>(duty),
+                Time::new::<uom::si::time::day>(f64::from(days)),
+            ).unwrap();
+            prop_assert!((scalar.value - mean.value).abs() <= 1e-12 * mean.value.max(1.0));
+        }
+    }
+
+    #[test]
+    fn months_take_their_own_ambient_and_sides_stay_apart() {
+        let fridge = Load {
+            duty: Duty::between(
+                parse("10 degC").unwrap(),
+                parse("20 %").unwrap(),
+                parse("30 degC").unwrap(),
+                parse("60 %").unwrap(),
+            )
+            .unwrap(),
+            ..standing(50.0, false)
+        };
+        let winter =
+            Schedule::hours(parse("5 h").unwrap()).unwrap().in_months(Months::from_to(12, 2).unwrap());
+        let terminals = Terminals::Ac { power_factor: parse("0.9").unwrap() };
+        let lamp = Load { schedule: winter, terminals, ..standing(100.0, false) };
+        let mut ambient = [parse("10 degC").unwrap(); 12];
+        ambient[6] = parse("30 degC").unwrap();
+        let year = energy_by_month(&[fridge, lamp], &ambient, parse("24 V").unwrap(), Day::Full).unwrap();
+        for (i, month) in year.iter().enumerate() {
+            let dc = if i == 6 { 720.0 } else { 240.0 };
+            let ac = if [0, 1, 11].contains(&i) { 500.0 } else { 0.0 };
+            assert!((month.dc.get::<watt_hour>() - dc).abs() < 1e-9, "{i}");
+            assert!((month.ac.get::<watt_hour>() - ac).abs() < 1e-9, "{i}");
+            assert_eq!(month.total(), month.dc + month.ac);
+        }
+        ambient[3] = parse("200 degC").unwrap();
+        assert!(energy_by_month(&[fridge], &ambient, parse("24 V").unwrap(), Day::Full).is_err());
+    }
+
+    #[test]
+    fn a_sum_too_large_for_a_number_is_an_error() {
+        let huge =
+            Load { schedule: Schedule::hours(parse("1 s").unwrap()).unwrap(), ..standing(1.5e308, false) };
+        assert!(energy_of_day(&[huge], &july()).is_ok());
+        assert!(energy_of_day(&[huge, huge], &july()).is_err());
+    }
 }

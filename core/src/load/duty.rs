@@ -21,9 +21,9 @@ use crate::quantity::{Ratio, ThermodynamicTemperature};
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Duty {
     cold: ThermodynamicTemperature,
-    cold_duty: Ratio,
+    in_cold: Ratio,
     warm: ThermodynamicTemperature,
-    warm_duty: Ratio,
+    in_warm: Ratio,
 }
 
 impl Duty {
@@ -47,7 +47,7 @@ impl Duty {
     pub fn full() -> Self {
         let at = ThermodynamicTemperature::new::<degree_celsius>;
         let one = Ratio::new::<ratio>(1.0);
-        Self { cold: at(0.0), cold_duty: one, warm: at(1.0), warm_duty: one }
+        Self { cold: at(0.0), in_cold: one, warm: at(1.0), in_warm: one }
     }
 
     /// At two ambients, the first the colder; a heater has the greater duty in the cold.
@@ -56,12 +56,12 @@ impl Duty {
     /// As [`duty_at_ambient`].
     pub fn between(
         cold: ThermodynamicTemperature,
-        cold_duty: Ratio,
+        in_cold: Ratio,
         warm: ThermodynamicTemperature,
-        warm_duty: Ratio,
+        in_warm: Ratio,
     ) -> Result<Self, Error> {
-        duty_at_ambient(cold, cold, cold_duty, warm, warm_duty)?;
-        Ok(Self { cold, cold_duty, warm, warm_duty })
+        duty_at_ambient(cold, cold, in_cold, warm, in_warm)?;
+        Ok(Self { cold, in_cold, warm, in_warm })
     }
 
     /// At an ambient.
@@ -69,7 +69,7 @@ impl Duty {
     /// # Errors
     /// [`Error::OutOfRange`] where the ambient is not −90 to 150 °C.
     pub fn at(&self, ambient: ThermodynamicTemperature) -> Result<Ratio, Error> {
-        duty_at_ambient(ambient, self.cold, self.cold_duty, self.warm, self.warm_duty)
+        duty_at_ambient(ambient, self.cold, self.in_cold, self.warm, self.in_warm)
     }
 
     /// The greatest between two ambients: at one of them, since the line has no hump.
@@ -117,5 +117,55 @@ calculations! {
     {
         let x = ((ambient.value - cold.value) / (warm.value - cold.value)).clamp(0.0, 1.0);
         cold_duty + (warm_duty - cold_duty) * x
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::quantity::parse;
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+
+    fn part(x: f64) -> Ratio {
+        Ratio::new::<ratio>(x)
+    }
+
+    proptest! {
+        #[test]
+        fn a_duty_stays_between_its_two_figures(
+            cold in -40.0..20.0f64, width in 0.1..60.0f64, a in 0.0..=1.0f64, b in 0.0..=1.0f64, ambient in -90.0..150.0f64,
+        ) {
+            let duty = Duty::between(at(cold), part(a), at(cold + width), part(b)).unwrap();
+            let here = duty.at(at(ambient)).unwrap().value;
+            prop_assert!(here >= a.min(b) - 1e-15 && here <= a.max(b) + 1e-15);
+            if ambient <= cold { prop_assert_eq!(here, a); }
+            if ambient >= cold + width + 1e-9 { prop_assert!((here - b).abs() < 1e-15); }
+            // The greatest over a range is no less than anywhere in it.
+            let (low, high) = (ambient.min(cold), ambient.max(cold));
+            let greatest = duty.greatest(at(low), at(high)).unwrap().value;
+            for k in 0..=10 {
+                let between = low + (high - low) * f64::from(k) / 10.0;
+                prop_assert!(duty.at(at(between)).unwrap().value <= greatest + 1e-12);
+            }
+        }
+    }
+
+    #[test]
+    fn what_is_no_duty_is_refused() {
+        for bad in [-0.01, 1.01, f64::NAN, f64::INFINITY] {
+            assert!(Duty::constant(part(bad)).is_err(), "{bad}");
+        }
+        let half = parse("50 %").unwrap();
+        assert!(Duty::between(at(20.0), half, at(20.0), half).is_err());
+        assert!(Duty::between(at(30.0), half, at(20.0), half).is_err());
+        for bad in [-91.0, 151.0, f64::NAN, f64::INFINITY] {
+            assert!(Duty::full().at(at(bad)).is_err(), "{bad}");
+        }
+        assert_eq!(Duty::constant(half).unwrap().at(at(-20.0)), Ok(half));
     }
 }

@@ -3,215 +3,18 @@
 //! Times are those of the site's clock. The day is cut into 48 half-hours: how long a load runs is exact to the minute,
 //! and two loads coincide where both run in one half-hour, since nobody switches on the minute.
 
-use core::str::FromStr;
-
+use uom::si::ratio::ratio;
 use uom::si::time::{hour, minute};
 
-use crate::error::{Allowed, Error, Snippet};
-use crate::quantity::Time;
+use super::months::Months;
+use super::window::{HALF_HOUR_MINUTES, Window};
+use crate::error::{Allowed, Error};
+use crate::quantity::{Ratio, Time};
 
 /// Half-hours of a day.
 pub const HALF_HOURS: u8 = 48;
-/// Months of a year.
-pub const MONTHS: u8 = 12;
 
-const DAY_MINUTES: u16 = 1440;
-const HALF_HOUR_MINUTES: u16 = 30;
 const ALL_DAY: [u8; 48] = [30; 48];
-
-/// Months of the year, 1 to 12, as a set.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub struct Months(u16);
-
-impl Months {
-    /// All of them.
-    pub const ALL: Self = Self(0xfff);
-    /// None.
-    pub const NONE: Self = Self(0);
-
-    /// The months listed; in any order, and one may stand twice.
-    ///
-    /// # Errors
-    /// [`Error::OutOfRange`] where a month is not 1 to 12.
-    pub fn of(months: &[u8]) -> Result<Self, Error> {
-        months.iter().try_fold(Self::NONE, |set, &month| Ok(Self(set.0 | bit(checked_month(month)?))))
-    }
-
-    /// From the first to the last month, both included; beyond December it goes on in January.
-    ///
-    /// # Errors
-    /// As [`Months::of`].
-    ///
-    /// # Example
-    /// ```
-    /// use ampwright::load::Months;
-    /// let winter = Months::from_to(11, 2)?;
-    /// assert_eq!((1..=12).filter(|&month| winter.contains(month)).collect::<Vec<_>>(), [1, 2, 11, 12]);
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    pub fn from_to(first: u8, last: u8) -> Result<Self, Error> {
-        let (first, last) = (checked_month(first)?, checked_month(last)?);
-        let within = |month: u8| {
-            if first <= last { (first..=last).contains(&month) } else { month >= first || month <= last }
-        };
-        Ok(Self((1..=MONTHS).filter(|&month| within(month)).fold(0, |set, month| set | bit(month))))
-    }
-
-    /// Whether a month belongs to them; false for what is no month.
-    pub const fn contains(self, month: u8) -> bool {
-        month >= 1 && month <= MONTHS && self.0 & bit(month) != 0
-    }
-
-    /// How many they are.
-    pub const fn count(self) -> u32 {
-        self.0.count_ones()
-    }
-
-    /// Those that belong to both.
-    #[must_use]
-    pub const fn and(self, other: Self) -> Self {
-        Self(self.0 & other.0)
-    }
-
-    pub(super) fn filter(self, keep: impl Fn(u8) -> bool) -> Self {
-        Self(
-            (1..=MONTHS)
-                .filter(|&month| self.contains(month) && keep(month))
-                .fold(0, |set, month| set | bit(month)),
-        )
-    }
-}
-
-const fn bit(month: u8) -> u16 {
-    1 << (month - 1)
-}
-
-pub(super) fn checked_month(month: u8) -> Result<u8, Error> {
-    if (1..=MONTHS).contains(&month) {
-        return Ok(month);
-    }
-    let allowed = Allowed::Between(1.0, 12.0);
-    Err(Error::OutOfRange { name: "month", value: f64::from(month), unit: "", allowed })
-}
-
-/// A part of the day, from one minute up to another; beyond midnight it goes on in the morning.
-///
-/// ```
-/// use ampwright::{load::Window, quantity::readable};
-/// let night: Window = "22:00-06:30".parse()?;
-/// assert_eq!(readable(night.duration()).to_string(), "8.5 h");
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub struct Window {
-    from: u16,
-    to: u16,
-}
-
-impl Window {
-    /// The whole day.
-    pub const DAY: Self = Self { from: 0, to: DAY_MINUTES };
-
-    /// From one minute of the day (0 … 1439) up to another (0 … 1440).
-    ///
-    /// # Errors
-    /// [`Error::OutOfRange`] where a minute is outside the day; [`Error::Contradiction`] where both are one.
-    pub fn minutes(from: u16, to: u16) -> Result<Self, Error> {
-        let within = |name, value: u16, most: u16| {
-            if value <= most {
-                return Ok(());
-            }
-            let allowed = Allowed::Between(0.0, f64::from(most));
-            Err(Error::OutOfRange { name, value: f64::from(value), unit: "min", allowed })
-        };
-        within("from", from, DAY_MINUTES - 1)?;
-        within("to", to, DAY_MINUTES)?;
-        if from == to {
-            return Err(Error::Contradiction {
-                name: "to",
-                value: f64::from(to),
-                unit: "min",
-                why: "a window that ends where it begins has no length; for the whole day write 00:00-24:00",
-            });
-        }
-        Ok(Self { from, to })
-    }
-
-    /// From one time of the day up to another, in whole minutes.
-    ///
-    /// # Errors
-    /// As [`Window::minutes`], and where a time is no whole minute.
-    ///
-    /// # Example
-    /// ```
-    /// use ampwright::{load::Window, quantity::parse};
-    /// assert_eq!(Window::times(parse("7.5 h")?, parse("9 h")?)?, "07:30-09:00".parse()?);
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    pub fn times(from: Time, to: Time) -> Result<Self, Error> {
-        Self::minutes(whole_minute("from", from)?, whole_minute("to", to)?)
-    }
-
-    /// Length.
-    pub fn duration(self) -> Time {
-        Time::new::<minute>(f64::from(self.length()))
-    }
-
-    fn length(self) -> u16 {
-        if self.from < self.to { self.to - self.from } else { DAY_MINUTES - self.from + self.to }
-    }
-
-    /// The minutes of a half-hour that lie inside, a bit each.
-    fn within(self, half_hour: u16) -> u32 {
-        let start = half_hour * HALF_HOUR_MINUTES;
-        let part = |from: u16, to: u16| {
-            let (from, to) = (from.max(start), to.min(start + HALF_HOUR_MINUTES));
-            if from >= to { 0 } else { ((1u32 << (to - from)) - 1) << (from - start) }
-        };
-        if self.from < self.to {
-            part(self.from, self.to)
-        } else {
-            part(self.from, DAY_MINUTES) | part(0, self.to)
-        }
-    }
-}
-
-fn whole_minute(name: &'static str, time: Time) -> Result<u16, Error> {
-    let minutes = time.get::<minute>();
-    let nearest = libm::round(minutes);
-    // A decimal hour such as 7.1 h is no whole number of minutes in binary: a millionth of a minute is forgiven.
-    if nearest >= 0.0 && nearest <= f64::from(DAY_MINUTES) && (minutes - nearest).abs() < 1e-6 {
-        // Between 0 and 1440.
-        #[allow(clippy::cast_possible_truncation, clippy::cast_sign_loss)]
-        return Ok(nearest as u16);
-    }
-    let allowed = Allowed::Words("a whole number of minutes from 0 to 1440");
-    Err(Error::OutOfRange { name, value: minutes, unit: "min", allowed })
-}
-
-impl FromStr for Window {
-    type Err = Error;
-
-    /// Reads `18:00-23:30`.
-    fn from_str(text: &str) -> Result<Self, Error> {
-        let of_clock = |clock: &str| {
-            let (hours, minutes) = clock.trim().split_once(':')?;
-            let digits =
-                |text: &str| (1..=2).contains(&text.len()) && text.bytes().all(|b| b.is_ascii_digit());
-            let (hours, minutes) = (digits(hours) && digits(minutes) && minutes.len() == 2)
-                .then(|| Some((hours.parse::<u16>().ok()?, minutes.parse::<u16>().ok()?)))??;
-            (minutes < 60 && hours <= 24).then_some(60 * hours + minutes)
-        };
-        let ends = text.split_once('-').and_then(|(from, to)| Some((of_clock(from)?, of_clock(to)?)));
-        let Some((from, to)) = ends else {
-            return Err(Error::UnknownWord {
-                text: Snippet::new(text),
-                allowed: "the windows of a day, such as 18:00-23:30 or 22:00-06:00",
-            });
-        };
-        Self::minutes(from, to)
-    }
-}
 
 /// When a load runs.
 ///
@@ -277,11 +80,7 @@ impl Schedule {
 
     fn lasting(self, hours_per_day: Time) -> Result<Self, Error> {
         let hours = hours_per_day.get::<hour>();
-        // Written so that NaN fails.
-        if !(hours > 0.0 && hours <= 24.0) {
-            let allowed = Allowed::AboveUpTo(0.0, 24.0);
-            return Err(Error::OutOfRange { name: "hours_per_day", value: hours, unit: "h", allowed });
-        }
+        Allowed::AboveUpTo(0.0, 24.0).check("hours_per_day", hours, "h")?;
         let daily = hours_per_day.get::<minute>();
         // Rounding between hours, seconds and minutes is forgiven.
         if daily > self.daily * (1.0 + 1e-12) {
@@ -300,11 +99,8 @@ impl Schedule {
     /// # Errors
     /// [`Error::OutOfRange`] where they are not 1 to 7.
     pub fn on_days(self, days_per_week: u8) -> Result<Self, Error> {
-        if (1..=7).contains(&days_per_week) {
-            return Ok(Self { days_per_week, ..self });
-        }
-        let (value, allowed) = (f64::from(days_per_week), Allowed::Between(1.0, 7.0));
-        Err(Error::OutOfRange { name: "days_per_week", value, unit: "", allowed })
+        Allowed::Between(1.0, 7.0).check("days_per_week", f64::from(days_per_week), "")?;
+        Ok(Self { days_per_week, ..self })
     }
 
     /// In these months only.
@@ -341,10 +137,11 @@ impl Schedule {
     /// Part of a half-hour for which it runs, on a day and in a month in which it runs.
     ///
     /// Where only the hours a day are known, they are spread evenly over its windows. 0 for what is no half-hour.
-    pub fn part_of(&self, half_hour: u8) -> f64 {
+    pub fn part_of(&self, half_hour: u8) -> Ratio {
         let minutes = self.minutes.get(usize::from(half_hour)).map_or(0.0, |&m| f64::from(m));
         let whole = total(&self.minutes);
-        if whole > 0.0 { minutes / f64::from(HALF_HOUR_MINUTES) * (self.daily / whole) } else { 0.0 }
+        // Every schedule has a minute in its windows.
+        Ratio::new::<ratio>(minutes / f64::from(HALF_HOUR_MINUTES) * (self.daily / whole))
     }
 
     /// The half-hours in which it may run, a bit each; that from midnight on is bit 0.
@@ -368,4 +165,126 @@ impl Schedule {
 
 fn total(minutes: &[u8; 48]) -> f64 {
     f64::from(minutes.iter().map(|&m| u16::from(m)).sum::<u16>())
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+
+    use super::*;
+
+    /// The minutes of a day, one by one.
+    fn by_the_minute(windows: &[(u16, u16)]) -> [bool; 1440] {
+        let mut day = [false; 1440];
+        for &(from, to) in windows {
+            let mut moment = from;
+            loop {
+                day[usize::from(moment)] = true;
+                moment = (moment + 1) % 1440;
+                if moment == to % 1440 {
+                    break;
+                }
+            }
+        }
+        day
+    }
+
+    /// Longest run of minutes without a break, round midnight.
+    fn longest(day: &[bool; 1440]) -> usize {
+        let (mut most, mut run) = (0, 0);
+        for moment in 0..2880 {
+            run = if day[moment % 1440] { run + 1 } else { 0 };
+            most = most.max(run);
+        }
+        most.min(1440)
+    }
+
+    fn schedule(windows: &[(u16, u16)]) -> Schedule {
+        let windows: std::vec::Vec<_> =
+            windows.iter().map(|&(from, to)| Window::minutes(from, to).unwrap()).collect();
+        Schedule::windows(&windows).unwrap()
+    }
+
+    extern crate std;
+
+    fn any_window() -> impl Strategy<Value = (u16, u16)> {
+        (0..1440u16, 0..=1440u16)
+            .prop_filter("no length", |(from, to)| from != to && (*from, *to) != (0, 1440))
+    }
+
+    proptest! {
+        #[test]
+        fn hours_and_half_hours_are_those_of_the_minutes(
+            windows in proptest::collection::vec(any_window(), 1..5),
+            days in 1..=7u8,
+        ) {
+            let (day, ours) = (by_the_minute(&windows), schedule(&windows).on_days(days).unwrap());
+            let minutes = day.iter().filter(|&&on| on).count();
+            prop_assert!((ours.hours_on_a_day().get::<minute>() - minutes as f64).abs() < 1e-9);
+            prop_assert!((ours.mean_hours().get::<minute>() * 7.0 - minutes as f64 * f64::from(days)).abs() < 1e-6);
+            for half_hour in 0..48u8 {
+                let slice = &day[30 * usize::from(half_hour)..][..30];
+                let on = slice.iter().filter(|&&on| on).count();
+                prop_assert_eq!(ours.may_run(6, half_hour), on > 0);
+                prop_assert_eq!(ours.half_hours() >> half_hour & 1 == 1, on > 0);
+                prop_assert!((ours.part_of(half_hour).value - on as f64 / 30.0).abs() < 1e-12);
+            }
+            // Gaps within a half-hour are not seen, so a run is never told too short.
+            prop_assert!(ours.longest_run().get::<minute>() >= longest(&day) as f64 - 1e-9);
+        }
+
+        #[test]
+        fn on_half_hours_a_run_is_that_of_the_minutes(
+            windows in proptest::collection::vec((0..48u16, 0..48u16), 1..5),
+        ) {
+            let windows: std::vec::Vec<_> =
+                windows.into_iter().filter(|(from, to)| from != to).map(|(from, to)| (30 * from, 30 * to)).collect();
+            prop_assume!(!windows.is_empty());
+            let run = schedule(&windows).longest_run().get::<minute>();
+            prop_assert_eq!(run, longest(&by_the_minute(&windows)) as f64);
+        }
+
+        #[test]
+        fn hours_within_windows_are_spread_over_them(
+            windows in proptest::collection::vec(any_window(), 1..4), part in 0.01..1.0f64,
+        ) {
+            let whole = schedule(&windows);
+            let windows: std::vec::Vec<_> =
+                windows.iter().map(|&(from, to)| Window::minutes(from, to).unwrap()).collect();
+            let ours = Schedule::within(&windows, whole.hours_on_a_day() * part).unwrap();
+            let sum: f64 = (0..48).map(|half_hour| 30.0 * ours.part_of(half_hour).value).sum();
+            prop_assert!((sum - ours.hours_on_a_day().get::<minute>()).abs() < 1e-9);
+            prop_assert_eq!(ours.half_hours(), whole.half_hours());
+            prop_assert!(ours.longest_run() <= ours.hours_on_a_day());
+        }
+    }
+
+    #[test]
+    fn hours_without_a_window_may_meet_everything() {
+        let four = Schedule::hours(Time::new::<hour>(4.0)).unwrap();
+        assert!((0..48).all(|half_hour| four.may_run(1, half_hour)));
+        assert!((four.part_of(7).value - 4.0 / 24.0).abs() < 1e-15);
+        assert_eq!(four.longest_run(), four.hours_on_a_day());
+        assert_eq!(Schedule::hours(Time::new::<hour>(24.0)), Ok(Schedule::CONTINUOUS));
+        for bad in [0.0, -1.0, 24.1, f64::NAN, f64::INFINITY] {
+            assert!(Schedule::hours(Time::new::<hour>(bad)).is_err(), "{bad}");
+        }
+    }
+
+    #[test]
+    fn what_contradicts_itself_is_refused() {
+        assert!(Schedule::windows(&[]).is_err());
+        let evening: Window = "18:00-22:00".parse().unwrap();
+        assert!(Schedule::within(&[evening], Time::new::<hour>(4.0)).is_ok());
+        assert!(matches!(
+            Schedule::within(&[evening], Time::new::<hour>(4.01)),
+            Err(Error::Contradiction { name: "hours_per_day", .. })
+        ));
+        for bad in [0, 8, 255] {
+            assert!(Schedule::CONTINUOUS.on_days(bad).is_err(), "{bad}");
+        }
+        let none = Schedule::CONTINUOUS.in_months(Months::NONE);
+        assert!((0..=13).all(|month| !none.may_run(month, 0)));
+        assert!(!Schedule::CONTINUOUS.may_run(1, 48) && Schedule::CONTINUOUS.part_of(48).value == 0.0);
+    }
 }

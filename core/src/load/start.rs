@@ -1,5 +1,7 @@
 //! Starts and power factors: what a load takes for seconds, and what an inverter must carry beside the watts.
 
+use uom::si::time::second;
+
 use crate::catalogue::calculations;
 use crate::error::{Allowed, Error};
 use crate::quantity::{Power, Ratio, Time};
@@ -9,35 +11,29 @@ use crate::quantity::{Power, Ratio, Time};
 pub struct Start {
     /// Locked-rotor current over rated current, at least 1.
     pub multiple: Ratio,
-    /// How long it lasts.
-    pub duration: Time,
+    /// How long it lasts; `None`: not known, so that no surge rating can be held against it.
+    pub duration: Option<Time>,
     /// How many of the load's units start in one moment, at least 1: those on one switch, or all after an outage.
     pub at_once: u32,
 }
 
 impl Start {
-    /// One unit after the other.
+    /// One unit after the other; the duration may be left open with `None`.
     ///
     /// # Errors
     /// [`Error::OutOfRange`] where the multiple is below 1, or the duration negative; infinite and NaN too.
-    pub fn one_by_one(multiple: Ratio, duration: Time) -> Result<Self, Error> {
-        let start = Self { multiple, duration, at_once: 1 };
+    pub fn one_by_one(multiple: Ratio, duration: impl Into<Option<Time>>) -> Result<Self, Error> {
+        let start = Self { multiple, duration: duration.into(), at_once: 1 };
         start.check().map(|()| start)
     }
 
     pub(super) fn check(&self) -> Result<(), Error> {
-        at_least("start multiple", self.multiple.value, 1.0, "")?;
-        at_least("start duration", self.duration.value, 0.0, "s")?;
-        at_least("units that start at once", f64::from(self.at_once), 1.0, "")
+        Allowed::AtLeast(1.0).check("start multiple", self.multiple.value, "")?;
+        if let Some(duration) = self.duration {
+            Allowed::AtLeast(0.0).check("start duration", duration.get::<second>(), "s")?;
+        }
+        Allowed::AtLeast(1.0).check("units that start at once", f64::from(self.at_once), "")
     }
-}
-
-/// Written so that NaN fails.
-pub(super) fn at_least(name: &'static str, value: f64, least: f64, unit: &'static str) -> Result<(), Error> {
-    if value >= least && value <= f64::MAX {
-        return Ok(());
-    }
-    Err(Error::OutOfRange { name, value, unit, allowed: Allowed::AtLeast(least) })
 }
 
 calculations! {
@@ -95,4 +91,35 @@ calculations! {
     formula "S = P/λ, in volt-amperes"
     source "definition of the power factor"
     { power / power_factor }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::quantity::parse;
+
+    #[test]
+    fn a_start_is_never_less_than_running() {
+        let start = |multiple: &str, seconds| {
+            Start::one_by_one(parse(multiple).unwrap(), Time::new::<second>(seconds))
+        };
+        assert!(start("1", 0.0).is_ok() && start("6", 2.0).is_ok());
+        assert!(start("0.99", 1.0).is_err() && start("2", -1.0).is_err());
+        assert!(start("2", f64::NAN).is_err() && start("2", f64::INFINITY).is_err());
+        for bad in [f64::NAN, f64::INFINITY] {
+            assert!(Start::one_by_one(Ratio::new::<uom::si::ratio::ratio>(bad), None).is_err());
+        }
+    }
+
+    #[test]
+    fn the_parts_of_a_starting_power_add_up() {
+        let part =
+            starting_power(parse("480 W").unwrap(), parse("3").unwrap(), parse("200 W").unwrap()).unwrap();
+        assert_eq!((part.starting.value, part.extra.value, part.total.value), (1440.0, 960.0, 1640.0));
+        // At a multiple of 1 a start is running.
+        let mild =
+            starting_power(parse("480 W").unwrap(), parse("1").unwrap(), parse("0 W").unwrap()).unwrap();
+        assert_eq!((mild.extra.value, mild.total.value), (0.0, 480.0));
+        assert!(apparent_power(parse("1 W").unwrap(), parse("0").unwrap()).is_err());
+    }
 }

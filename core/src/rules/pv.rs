@@ -33,8 +33,6 @@ pub struct PvRule {
     pub device_least: Option<Limit<f64>>,
     /// Greatest rating of a string's device over the short-circuit current; the module's series-fuse rating counts in every set.
     pub device_most: Option<Limit<f64>>,
-    /// So many strings need no devices of their own, whatever the figures; more are computed.
-    pub strings_without_device: Option<Limit<u16>>,
     /// Factors for modules without a coefficient of open-circuit voltage.
     pub cold: Option<ColdTable>,
     /// Greatest voltage of an array, V.
@@ -49,18 +47,12 @@ pub struct PvRule {
     pub touch_from: Option<Limit<f64>>,
 }
 
-const fn us<T>(value: T, place: &'static str) -> Option<Limit<T>>
-where
-    T: Copy,
-{
-    Some(Limit { value, citation: Citation::new("NFPA 70-2023", place, Seen::Recalled) })
+const fn us<T: Copy>(value: T, place: &'static str) -> Limit<T> {
+    Limit { value, citation: Citation::new("NFPA 70-2023", place, Seen::Recalled) }
 }
 
-const fn iec<T>(value: T, place: &'static str) -> Option<Limit<T>>
-where
-    T: Copy,
-{
-    Some(Limit { value, citation: Citation::new("IEC 62548:2016", place, Seen::Recalled) })
+const fn iec<T: Copy>(value: T, place: &'static str) -> Limit<T> {
+    Limit { value, citation: Citation::new("IEC 62548:2016", place, Seen::Recalled) }
 }
 
 /// Source: NFPA 70-2023, Table 690.7(A), crystalline and multicrystalline silicon, recalled. IEC 62548 prints the same figures.
@@ -82,28 +74,26 @@ const COLD_ROWS: [ColdRow; 13] = [
 ];
 
 static US: PvRule = PvRule {
-    irradiance_factor: us(1.25, "690.8(A)(1)(a)"),
-    continuous_factor: us(1.25, "690.8(B)(1)"),
-    device_least: us(1.5625, "690.9(B)(1)"),
+    irradiance_factor: Some(us(1.25, "690.8(A)(1)(a)")),
+    continuous_factor: Some(us(1.25, "690.8(B)(1)")),
+    device_least: Some(us(1.5625, "690.9(B)(1)")),
     device_most: None,
-    strings_without_device: None,
     cold: Some(ColdTable {
         rows: &COLD_ROWS,
         citation: Citation::new("NFPA 70-2023", "Table 690.7(A)", Seen::Recalled),
     }),
-    greatest_voltage: us(600.0, "690.7, one- and two-family dwellings"),
-    earth_fault_from: us(30.0, "690.41(B)"),
-    arc_fault_from: us(80.0, "690.11"),
-    isolator: us(true, "690.13, 690.15"),
-    touch_from: us(30.0, "690.31(A)"),
+    greatest_voltage: Some(us(600.0, "690.7, one- and two-family dwellings")),
+    earth_fault_from: Some(us(30.0, "690.41(B)")),
+    arc_fault_from: Some(us(80.0, "690.11")),
+    isolator: Some(us(true, "690.13, 690.15")),
+    touch_from: Some(us(30.0, "690.31(A)")),
 };
 
 static IEC: PvRule = PvRule {
-    irradiance_factor: iec(1.25, "6.5, maximum current of a string"),
-    continuous_factor: iec(1.0, "no factor on continuous current"),
-    device_least: iec(1.5, "6.5.3"),
-    device_most: iec(2.4, "6.5.3"),
-    strings_without_device: None,
+    irradiance_factor: Some(iec(1.25, "6.5, maximum current of a string")),
+    continuous_factor: Some(iec(1.0, "no factor on continuous current")),
+    device_least: Some(iec(1.5, "6.5.3")),
+    device_most: Some(iec(2.4, "6.5.3")),
     cold: Some(ColdTable {
         rows: &COLD_ROWS,
         citation: Citation::new(
@@ -112,10 +102,10 @@ static IEC: PvRule = PvRule {
             Seen::Recalled,
         ),
     }),
-    greatest_voltage: iec(1000.0, "7.2, arrays on buildings"),
-    earth_fault_from: iec(60.0, "6.4, arrays above DVC-A"),
+    greatest_voltage: Some(iec(1000.0, "7.2, arrays on buildings")),
+    earth_fault_from: Some(iec(60.0, "6.4, arrays above DVC-A")),
     arc_fault_from: None,
-    isolator: iec(true, "7.4, switch-disconnector"),
+    isolator: Some(iec(true, "7.4, switch-disconnector")),
     touch_from: Some(Limit {
         value: 60.0,
         citation: Citation::new("IEC 60364-4-41:2005", "414.4.5", Seen::Recalled),
@@ -128,7 +118,6 @@ static CRAFT: PvRule = PvRule {
     continuous_factor: None,
     device_least: None,
     device_most: None,
-    strings_without_device: None,
     cold: None,
     greatest_voltage: None,
     earth_fault_from: None,
@@ -142,6 +131,9 @@ const PRACTICE_IRRADIANCE: Cited = Cited {
     value: 1.25,
     citation: Citation::new("common practice, no source", "1.25 for bright light", Seen::Practice),
 };
+
+/// Temperature at which modules are rated, °C.
+const RATED_DEGC: f64 = 25.0;
 
 impl PvRule {
     /// The factors as the array's room takes them.
@@ -163,7 +155,7 @@ impl PvRule {
 
     /// Factor on rated open-circuit voltage at the coldest ambient, for a module without a coefficient.
     ///
-    /// 1 above the table's warmest band; between two bands, which are whole degrees, the colder counts.
+    /// 1 from 25 °C on, where the module is rated; between two bands, which are whole degrees, the colder counts.
     ///
     /// # Errors
     /// [`Error::NotTabulated`] where the set holds no table, [`Error::TableEnds`] below its coldest band,
@@ -181,8 +173,7 @@ impl PvRule {
                 remedy: "state the module's coefficient of open-circuit voltage",
             });
         };
-        let warmest = table.rows.first().map_or(f64::NEG_INFINITY, |&(warm, _, _)| warm);
-        if celsius > warmest {
+        if celsius >= RATED_DEGC {
             return Ok(Cited { value: 1.0, citation: table.citation });
         }
         match table.rows.iter().find(|&&(_, cold, _)| celsius >= cold) {

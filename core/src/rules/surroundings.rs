@@ -86,8 +86,6 @@ pub struct Surroundings {
     pub surge_mast: Option<Asked>,
     /// Isolator of an array.
     pub isolator: Asked,
-    /// Earth-fault detection or insulation monitoring of an array; `None`: no rule held.
-    pub array_earth_fault: Option<Asked>,
 }
 
 /// Area of one opening for a flow of air, cm² for each m³/h: two of them, one low and one high, on opposite walls or
@@ -139,7 +137,9 @@ static US: Surroundings = Surroundings {
     bonding: &[
         bond(Bonding::AntennaMast, awg(10), recalled(NFPA, "810.21(H)")),
         bond(Bonding::AntennaToPlant, awg(6), recalled(NFPA, "810.21(J)")),
-        bond(Bonding::LightningBar, awg(6), recalled(NFPA, "250.106 and 250.94")),
+        // 57 400 circular mils are no gauge: the next larger.
+        bond(Bonding::LightningDown, awg(2), recalled("NFPA 780", "class I main conductor, 57.4 kcmil")),
+        bond(Bonding::LightningPart, awg(6), recalled("NFPA 780", "bonding conductor, 26.24 kcmil")),
     ],
     bond_points: limit(1, recalled(NFPA, "250.164(B) and 690.42")),
     ignition_protected: None,
@@ -157,7 +157,6 @@ static US: Surroundings = Surroundings {
          by one that is",
         recalled(NFPA, "690.13 and 690.15"),
     ),
-    array_earth_fault: Some(asked("ground-fault protection of PV DC circuits", recalled(NFPA, "690.41(B)"))),
 };
 
 static IEC: Surroundings = Surroundings {
@@ -193,10 +192,6 @@ static IEC: Surroundings = Surroundings {
         "category DC-PV1 or DC-PV2 at the greatest open-circuit voltage and current of the array",
         recalled("IEC 60947-3", "annex for photovoltaic use"),
     ),
-    array_earth_fault: Some(asked(
-        "insulation resistance measured before connection and earth fault reported",
-        recalled("IEC 62548", "earth-fault protection by kind of inverter and earthing"),
-    )),
 };
 
 static CRAFT_ISO: Surroundings = Surroundings {
@@ -206,10 +201,7 @@ static CRAFT_ISO: Surroundings = Surroundings {
         extra_low_V: None,
         scope_V: Some(limit(50.0, recalled("ISO 13297:2020", "scope"))),
     },
-    bonding: &[
-        bond(Bonding::LightningDown, mm2(20.0), recalled("ISO 10134", "main conductor")),
-        bond(Bonding::LightningPart, mm2(16.0), recalled("ISO 10134", "secondary conductor")),
-    ],
+    bonding: &[bond(Bonding::LightningDown, mm2(20.0), recalled("ISO 10134", "main conductor"))],
     bond_points: limit(1, recalled("ISO 13297:2020", "negative joined to the ground at one point")),
     ignition_protected: Some(asked(
         "ignition-protected after ISO 8846 in spaces with a petrol engine, tank or joint, or with gas bottles",
@@ -225,7 +217,6 @@ static CRAFT_ISO: Surroundings = Surroundings {
         "a switch for each source, rated for its current and voltage",
         recalled("ISO 13297:2020", "switches"),
     ),
-    array_earth_fault: None,
 };
 
 static CRAFT_US: Surroundings = Surroundings {
@@ -233,7 +224,7 @@ static CRAFT_US: Surroundings = Surroundings {
         dry_V: limit(50.0, recalled("ABYC E-11", "scope: under 50 V")),
         wet_V: None,
         extra_low_V: None,
-        scope_V: Some(limit(50.0, recalled("33 CFR 183.401", "scope: less than 50 V"))),
+        scope_V: Some(limit(50.0, recalled("33 CFR 183.425", "circuits of less than 50 V"))),
     },
     bonding: &[
         bond(Bonding::LightningDown, awg(4), recalled("ABYC TE-4", "main conductor")),
@@ -257,7 +248,6 @@ static CRAFT_US: Surroundings = Surroundings {
         "a switch for each source, rated for its current and voltage",
         recalled("ABYC E-11", "switches"),
     ),
-    array_earth_fault: None,
 };
 
 /// What a set asks of the surroundings.

@@ -23,7 +23,7 @@ use crate::quantity::{
 /// Energy lost in the wiring where nothing is stated. Common practice, no source.
 pub(super) const WIRING_LOSS: f64 = 0.03;
 /// Ambient at which a load's plain `duty` holds, °C. Common practice, no source.
-const MILD_degC: f64 = 20.0;
+const MILD_DEGC: f64 = 20.0;
 
 /// What one day of a month takes out of a bank.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -146,7 +146,7 @@ pub(super) fn load_of(site: &Site, entry: &LoadEntry, nominal: ElectricPotential
         (None, _) => Duty::full(),
         (Some(duty), None) => Duty::constant(duty)?,
         (Some(duty), Some(hot)) => {
-            let mild = ThermodynamicTemperature::new::<degree_celsius>(MILD_degC);
+            let mild = ThermodynamicTemperature::new::<degree_celsius>(MILD_DEGC);
             if site.ambient.1 > mild {
                 Duty::between(mild, duty, site.ambient.1, hot)?
             } else {
@@ -162,7 +162,7 @@ pub(super) fn load_of(site: &Site, entry: &LoadEntry, nominal: ElectricPotential
     let start = entry
         .start_power
         .filter(|start| entry.ac && *start > power && power.value > 0.0)
-        .map(|start| Start::one_by_one(start / power, Time::new::<uom::si::time::second>(1.0)))
+        .map(|start| Start::one_by_one(start / power, None))
         .transpose()?;
     Ok(Load {
         draw,
@@ -239,6 +239,10 @@ impl Sum<'_> {
                         if load.standing {
                             sum.standing += energy;
                         }
+                    }
+                    // In months in which none of its loads may run it is off; told among the assumptions.
+                    if ac.value <= 0.0 && ac_loads(self.site, i).next().is_some() {
+                        continue;
                     }
                     sum.ac += ac;
                     sum.inverters += inverter_of(entry, self.nominal)?.daily_energy(ac, day)?;

@@ -6,9 +6,7 @@ use alloc::vec::Vec;
 use super::energy::DayDemand;
 use crate::battery::Chemistry;
 use crate::citation::Citation;
-use crate::quantity::{
-    ElectricCharge, ElectricCurrent, ElectricPotential, Energy, Power, Ratio, Time, Volume,
-};
+use crate::quantity::{ElectricCharge, ElectricCurrent, ElectricPotential, Energy, Power, Ratio, Time};
 
 /// One step of a derivation.
 #[derive(Clone, Debug, PartialEq)]
@@ -163,8 +161,6 @@ pub struct GeneratorLine {
     pub lasting: Option<ElectricCurrent>,
     /// Hours from greatest depth to full, absorption tail included.
     pub recharge: Option<Time>,
-    /// Fuel for that.
-    pub fuel: Option<Volume>,
     /// How it came to that.
     pub steps: Vec<Step>,
 }

@@ -175,6 +175,8 @@ pub struct BankPart {
     pub route: Option<Length>,
     /// `board`: the board it feeds, where the circuit is designed.
     pub board: Option<String>,
+    /// Its size was left to the design.
+    pub designed: bool,
 }
 
 impl BankPart {
@@ -220,6 +222,7 @@ impl BankPart {
             opening: None,
             route: None,
             board: None,
+            designed: false,
         }
     }
 }

@@ -7,6 +7,8 @@ use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
 use super::bank::cells;
+use super::check::At;
+use super::check::place::touch;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
 use super::plan::{Plan, sources};
@@ -15,8 +17,6 @@ use crate::battery::cell_voltages;
 use crate::citation::{Citation, Seen};
 use crate::protection::Earthing;
 
-/// Highest voltage that may be touched without basic protection in dry places, V.
-const TOUCH_V: f64 = 60.0;
 /// Upper limit of extra-low voltage, DC, V.
 const EXTRA_LOW_V: f64 = 120.0;
 /// Most lugs on one stud (R8).
@@ -46,6 +46,9 @@ pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
         let (need, what) =
             if fed >= drawn { (fed, "the devices that feed it") } else { (drawn, "its loads") };
         match board.busbar.map(|b| b.get::<ampere>()) {
+            None if board.designed => {
+                found.pass("R8", &place, &format!("busbar to be bought for at least {} A", digits(need)));
+            }
             None => found.add(
                 Severity::NotChecked,
                 "R8",
@@ -298,7 +301,8 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
             .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
             .sum();
         plausible(bank, &place, found);
-        if bank.strings > 2 {
+        let is_told = bank.part.as_ref().is_some_and(|p| p.designed || p.take_off.is_some());
+        if bank.strings > 2 && !is_told && !site.is_whole {
             found.add(
                 Severity::NotChecked,
                 "R15",
@@ -375,23 +379,7 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
                 "",
             );
         }
-        if highest > TOUCH_V {
-            found.add(
-                Severity::NotChecked,
-                "R19",
-                "touch-protection",
-                place.clone(),
-                bank.line,
-                format!(
-                    "the bank reaches {} V, above {} V: protection against touch is not described in \
-                     the document",
-                    digits(highest),
-                    digits(TOUCH_V)
-                ),
-                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)),
-                "cover live parts and mark them",
-            );
-        }
+        touch(site, highest, None, &mut At::new(found, place.clone(), bank.line));
         let known = sources(site);
         if known.get(index).is_some_and(|e| e.by_thumb) {
             found.add(

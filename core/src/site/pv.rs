@@ -23,7 +23,7 @@ use crate::quantity::{
 const WIRING_DROP: f64 = 0.03;
 const AGEING: f64 = 0.05;
 /// Greatest air temperature for which NOCT holds, °C.
-const NOCT_AIR_degC: (f64, f64) = (-60.0, 60.0);
+const NOCT_AIR_DEGC: (f64, f64) = (-60.0, 60.0);
 
 /// A module of the document as the array floor knows it.
 pub(super) fn module_of(part: &ModulePart) -> Result<Module, Error> {
@@ -49,7 +49,7 @@ pub(super) fn coldest(site: &Site) -> ThermodynamicTemperature {
 
 /// Hottest cells: the greatest ambient in full sun.
 pub(super) fn hottest_cell(site: &Site, module: &Module) -> Result<ThermodynamicTemperature, Error> {
-    let air = site.ambient.1.get::<degree_celsius>().clamp(NOCT_AIR_degC.0, NOCT_AIR_degC.1);
+    let air = site.ambient.1.get::<degree_celsius>().clamp(NOCT_AIR_DEGC.0, NOCT_AIR_DEGC.1);
     cell_temperature(
         ThermodynamicTemperature::new::<degree_celsius>(air),
         module.noct().0,

@@ -8,6 +8,8 @@ use uom::si::electric_potential::volt;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::complete::complete;
+use super::describe::{self, PlantLines};
+use super::energy::demands;
 use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
 use super::model::{CircuitEntry, Document, Return};
@@ -99,6 +101,8 @@ pub struct Report {
     pub overrides: Vec<String>,
     /// Banks and surroundings, one line each.
     pub system: Vec<String>,
+    /// Banks, energy, arrays, inverters, sources; empty where only wiring is described.
+    pub plant: PlantLines,
     /// Circuits, in the order of the document.
     pub circuits: Vec<CircuitLine>,
     /// Findings, gravest first.
@@ -163,9 +167,12 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
             Some(line_of(site, &plan, index, circuit, planned.as_ref()?))
         })
         .collect();
-    let found = findings(site, &plan);
+    let demands = demands(site).unwrap_or_default();
+    let found = findings(site, &plan, &demands);
+    let plant = describe::plant(site, &demands, &reasons);
     let paper = paper(site, &plan);
     Ok(Report {
+        plant,
         name: site.name.clone(),
         edition: site.rules.set().edition.to_string(),
         overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
@@ -279,6 +286,7 @@ fn system(site: &Site) -> Vec<String> {
     let mut lines: Vec<String> = site
         .banks
         .iter()
+        .filter(|b| b.is_battery())
         .map(|b| {
             format!(
                 "bank \"{}\": {} {} V, {} Ah, from {} V at cut-off to {} V at its highest",

@@ -40,6 +40,7 @@ impl fmt::Display for Report {
         for line in &self.system {
             writeln!(f, "{}", printable(line))?;
         }
+        super::plant_text::print(&self.plant, f)?;
         self.summary(f)?;
         self.found(f)?;
         heading(f, "Circuits in detail")?;

@@ -95,7 +95,7 @@ fn one(array: &Array, check: &PvCheck, at: &mut At<'_>) {
         PvOutcome::NotChecked
             if array.strings < 2
                 && matches!(check.subject, PvSubject::StringFault | PvSubject::ConductorFault) => {}
-        PvOutcome::NotChecked => at.unmade(("R10", "array-not-checked"), check.what),
+        PvOutcome::NotChecked => at.unmade(("R10", "array-not-checked"), &check.to_string()),
     }
 }
 

@@ -4,8 +4,10 @@
 //! key to state.
 
 mod array;
+pub(super) mod bank;
+pub(super) mod charge;
 mod load;
-mod place;
+pub(super) mod place;
 
 use alloc::string::String;
 
@@ -69,6 +71,8 @@ pub(super) fn plant(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
     }
     load::loads(site, demands, found);
     load::inverters(site, plan, found);
+    bank::banks(site, plan, demands, found);
+    charge::banks(site, found);
     array::arrays(site, found);
     place::place(site, found);
 }

@@ -98,7 +98,7 @@ fn bonds(site: &Site, most: u8, citation: Citation, at: &mut At<'_>) {
 }
 
 /// Above a voltage live parts are covered.
-pub(super) fn touch(site: &Site, volts: f64, limit: Option<(f64, Citation)>, at: &mut At<'_>) {
+pub(in crate::site) fn touch(site: &Site, volts: f64, limit: Option<(f64, Citation)>, at: &mut At<'_>) {
     let (most, citation) = match limit {
         Some((most, citation)) if most < TOUCH_V => (most, citation),
         _ => (TOUCH_V, TOUCH),

@@ -28,10 +28,9 @@ use crate::site::model::Document;
 use crate::site::parts::{ArrayPart, Charging, ControllerKind, ControllerPart, ModulePart};
 use crate::site::pv::{ask, module_of};
 use crate::site::read::Problem;
+use crate::site::supply::{ARRAY_LOSS, day_energy, efficiency, module_power};
 use crate::site::system::{Array, BankEntry, Site};
 
-/// Lost to dirt, mismatch and wiring, where nothing is stated. Common practice, no source.
-pub(crate) const ARRAY_LOSS: f64 = 0.1;
 const PRACTICE: Citation =
     Citation::new("common practice, no source", "dirt, mismatch, wiring", Seen::Practice);
 /// Most modules that are tried beyond the number that energy asks for: whole strings need a few more.
@@ -372,7 +371,7 @@ fn try_one(
             (Some(each), Some(one)) => Some(each * f64::from(count) + one),
             _ => None,
         };
-        let reached = reached(wanted, part, module, controller, trial.layout, worst_month)?;
+        let reached = reached(wanted, module, controller, trial.layout, worst_month)?;
         return Ok(Choice {
             module: part.clone(),
             controller: controller.clone(),
@@ -456,28 +455,6 @@ fn clamped(
     Ok((steps, modules, found.worst_month))
 }
 
-/// Power of a module with the cells of a month's mean day.
-fn module_power(wanted: &Wanted<'_>, module: &Module, month: usize) -> Power {
-    let air = wanted
-        .site
-        .weather
-        .as_ref()
-        .and_then(|w| w.temperature)
-        .and_then(|t| t.get(month).copied())
-        .unwrap_or(wanted.site.ambient.1);
-    let cell = crate::array::cell_temperature(
-        air,
-        module.noct().0,
-        crate::quantity::Irradiance::new::<uom::si::heat_flux_density::watt_per_square_meter>(800.0),
-    );
-    let sheet = module.sheet();
-    let coefficient =
-        sheet.power_coefficient.map_or(-0.004, |c| c.get::<uom::si::temperature_coefficient::per_kelvin>());
-    let rise = cell.map_or(0.0, |c| c.get::<uom::si::thermodynamic_temperature::degree_celsius>() - 25.0);
-    // The cold gives no more than the label: what clouds leave is warm enough.
-    sheet.power * (1.0 + coefficient * rise).clamp(0.1, 1.0)
-}
-
 fn tracked(
     wanted: &Wanted<'_>,
     module: &Module,
@@ -487,8 +464,8 @@ fn tracked(
 ) -> Result<(Vec<Step>, u16, usize), String> {
     // The month decides the temperature, the temperature the power: the worst month by demand over sun comes first.
     let worst = worst_month(wanted);
-    let power = module_power(wanted, module, worst);
-    let efficiency = controller.efficiency.unwrap_or_else(|| Ratio::new::<ratio>(0.95));
+    let power = module_power(wanted.site, module, worst);
+    let efficiency = efficiency(controller);
     let need = EnergyNeed {
         months: months(wanted, |day| day.total),
         array_to_load: to_load,
@@ -530,21 +507,16 @@ fn worst_month(wanted: &Wanted<'_>) -> usize {
 /// Ratio of what the array brings into the bank to what is taken out, in the worst month.
 fn reached(
     wanted: &Wanted<'_>,
-    part: &ModulePart,
     module: &Module,
     controller: &ControllerPart,
     layout: Layout,
     month: usize,
 ) -> Result<Ratio, String> {
-    let sun = wanted.sun.get(month).copied().unwrap_or_default();
     let demand = wanted.months.get(month).map_or(DayDemand::NONE, |d| *d);
     let kept = (1.0 - wanted.losses.get::<ratio>()) * wanted.charge_efficiency.get::<ratio>();
-    let energy = if controller.kind == Some(ControllerKind::Pwm) {
-        part.imp * f64::from(layout.in_parallel) * wanted.bank.nominal * sun
-    } else {
-        let efficiency = controller.efficiency.map_or(0.95, |e| e.get::<ratio>());
-        module_power(wanted, module, month) * f64::from(layout.modules()) * efficiency * sun
-    };
+    let counts = (u32::from(layout.in_series), u32::from(layout.in_parallel));
+    let energy =
+        day_energy(wanted.site, module, controller, counts, wanted.bank.nominal, month).unwrap_or_default();
     if demand.total.value <= 0.0 {
         return Err("there is no demand to charge for".to_string());
     }

@@ -36,7 +36,7 @@ use crate::site::system::{BankEntry, FeedKind, Site};
 /// Nominal voltages that are designed.
 const NOMINALS_V: [f64; 3] = [12.0, 24.0, 48.0];
 /// Plain batteries are bought in steps, Ah.
-const PLAIN_STEP_Ah: f64 = 10.0;
+const PLAIN_STEP_AH: f64 = 10.0;
 /// Most strings in parallel where nothing is stated (R15): three or more take leads to a busbar and devices of their own.
 const MOST_STRINGS: u32 = 4;
 const COMMON: Citation = Citation::new("common practice, no source", "", Seen::Practice);
@@ -66,6 +66,11 @@ pub(super) fn is_open(part: &BankPart) -> bool {
     part.capacity.is_none()
         && part.unit_capacity.is_none()
         && (part.battery.is_none() || part.strings.is_none() && part.units.is_none())
+}
+
+/// Whether the size of a bank of the site was designed.
+pub(in crate::site) fn was_designed(part: &BankPart) -> bool {
+    part.designed
 }
 
 /// Nominal voltage: stated, told by its batteries, or the least that suits the loads and keeps the current practical.
@@ -467,7 +472,7 @@ fn plain(
 ) -> Result<Choice, Error> {
     let cells = cells(chemistry, nominal)?;
     let (need, _, mut steps) = needed(chemistry, duty)?;
-    let rounded = libm::ceil(need.get::<ampere_hour>() / PLAIN_STEP_Ah).max(1.0) * PLAIN_STEP_Ah;
+    let rounded = libm::ceil(need.get::<ampere_hour>() / PLAIN_STEP_AH).max(1.0) * PLAIN_STEP_AH;
     steps.push(Step { what: "rounded up".to_string(), value: rounded, unit: "Ah", citation: None });
     let capacity = ElectricCharge::new::<ampere_hour>(rounded);
     let mut bank = entry(
@@ -537,7 +542,12 @@ fn of_stock(
         citation: None,
     });
     let part = stock::bank(
-        &BankPart { battery: Some(battery.name.clone()), nominal: Some(nominal), ..stated.clone() },
+        &BankPart {
+            designed: true,
+            battery: Some(battery.name.clone()),
+            nominal: Some(nominal),
+            ..stated.clone()
+        },
         battery,
         found.series,
         found.strings,

@@ -80,14 +80,13 @@ pub(in crate::site) fn demand<'a>(
         Vec<Power>,
         Vec<Power>,
     ) = Default::default();
-    let (mut starts, nothing) = (false, Power::default());
+    let nothing = Power::default();
     for entry in loads {
         let load = load_of(site, entry, nominal)?;
         occasions.push(load.occasion(None)?);
         watts.push(load.power_at(nominal)?);
         let apparent = load.apparent_at(nominal)?;
         amperes.push(apparent);
-        starts |= load.start.is_some();
         extra.push(apparent * load.start_extra()?);
     }
     let none: Vec<Power> = watts.iter().map(|_| nothing).collect();
@@ -97,7 +96,7 @@ pub(in crate::site) fn demand<'a>(
         power: running,
         apparent: apparent.running,
         starting: apparent.with_start.sum,
-        duration: starts.then(|| Time::new::<uom::si::time::second>(1.0)),
+        duration: None,
         ambient: Some(site.ambient.1),
     })
 }

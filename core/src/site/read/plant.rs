@@ -93,6 +93,7 @@ pub(super) fn bank(entry: &mut Entry<'_, '_>) -> Option<BankPart> {
         opening: entry.quantity(&OPENING),
         route: entry.quantity(&ROUTE),
         board: named(entry, &BOARD_NAME),
+        designed: false,
     };
     entry.ordered(&CUT_OFF, cut_off, &NOMINAL, nominal);
     entry.ordered(&NOMINAL, nominal, &HIGHEST, highest);

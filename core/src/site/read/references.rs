@@ -140,11 +140,12 @@ fn batteries_of(document: &Document, bank: &BankPart, log: &mut Log) {
                         battery of the stock";
         log.push_line(bank.line, place.clone(), String::from(sentence));
     }
-    /*XX if let (Some(chemistry), Some(volts)) = (chemistry, unit.or(nominal))
-        && let Err(error) = crate::battery::cells(chemistry, uom::si::f64::ElectricPotential::new::<volt>(volts))
+    if let (Some(chemistry), Some(volts)) = (chemistry, unit.or(nominal))
+        && let Err(error) =
+            crate::battery::cells(chemistry, uom::si::f64::ElectricPotential::new::<volt>(volts))
     {
         log.push_line(bank.line, place.clone(), format!("{error}"));
-    } XX*/
+    }
     let series = match (unit, nominal) {
         (Some(unit), Some(nominal)) => {
             let count = libm::round(nominal / unit);
