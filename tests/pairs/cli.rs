@@ -105,6 +105,21 @@ fn what_is_no_site_file_is_refused_in_one_sentence() {
     is_refused(&[example("heron_point.toml"), example("badly_built.toml")], &[&["one site file at a time"]]);
 }
 
+#[test]
+fn two_files_are_compared() {
+    let same = [PathBuf::from("--compare"), example("heron_point.toml"), example("heron_point.toml")];
+    assert_eq!(run(&same), (0, "nothing differs\n".to_string(), String::new()));
+    let (larger, _) = changed("larger_pump.toml", "power = \"110 W\"", "power = \"220 W\"");
+    let (status, out, err) = run([PathBuf::from("--compare"), example("heron_point.toml"), larger.clone()]);
+    assert_eq!((status, err.as_str()), (1, ""));
+    assert!(out.contains("~ circuit \"pump\", current: "), "{out}");
+    is_refused(&[PathBuf::from("--compare"), larger.clone()], &[&["two site files to compare"]]);
+    let bad = file("compare_bad.toml", b"format = 1\n");
+    let (status, out, err) = run([PathBuf::from("--compare"), larger, bad]);
+    assert_eq!((status, out.as_str()), (2, ""));
+    assert!(err.lines().all(|line| line.contains("compare_bad.toml: ")), "{err}");
+}
+
 #[cfg(unix)]
 #[test]
 fn files_without_an_end_or_a_content_are_refused() {

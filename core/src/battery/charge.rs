@@ -279,7 +279,7 @@ calculations! {
     }
 }
 
-fn checked_celsius(temperature: ThermodynamicTemperature) -> Result<f64, Error> {
+pub(super) fn checked_celsius(temperature: ThermodynamicTemperature) -> Result<f64, Error> {
     let celsius = temperature.get::<degree_celsius>();
     let (least, most) = RANGE_degC;
     // Written so that NaN fails.

@@ -88,7 +88,7 @@ fn heat(
 }
 
 /// Heat from which a joint is pointed out, does not conform, and is a danger, W.
-fn limits(kind: JointKind, current: ElectricCurrent) -> [f64; 3] {
+pub(super) fn limits(kind: JointKind, current: ElectricCurrent) -> [f64; 3] {
     let by_design = match kind {
         JointKind::Lug | JointKind::Terminal | JointKind::Busbar | JointKind::Connector => 0.0,
         JointKind::Switch | JointKind::Relay | JointKind::Fuse | JointKind::Breaker | JointKind::Shunt => {

@@ -282,7 +282,7 @@ pub(super) fn joints(site: &Site, circuit: &CircuitEntry, fitted: &[Fitted]) -> 
 }
 
 /// Generic resistance of a part, by its rating where that is known.
-fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
+pub(super) fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
     rating
         .and_then(|rating| rated_joint_resistance(kind, rating).ok())
         .unwrap_or_else(|| joint_resistance(kind))

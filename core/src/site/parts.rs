@@ -175,6 +175,56 @@ pub struct BankPart {
     pub route: Option<Length>,
     /// `board`: the board it feeds, where the circuit is designed.
     pub board: Option<String>,
+    /// Its size was left to the design.
+    pub designed: bool,
+}
+
+impl BankPart {
+    /// A bank of which nothing is stated but a name.
+    pub(super) fn unstated(name: String) -> Self {
+        Self {
+            name: name,
+            line: 0,
+            battery: None,
+            chemistry: None,
+            nominal: None,
+            capacity: None,
+            unit: None,
+            unit_capacity: None,
+            units: None,
+            series: None,
+            strings: None,
+            rate: None,
+            cut_off: None,
+            highest: None,
+            short_circuit: None,
+            internal_resistance: None,
+            greatest_discharge: None,
+            greatest_charge: None,
+            charge_from: None,
+            stud: None,
+            temperature: None,
+            depth: None,
+            daily_depth: None,
+            disconnect: None,
+            reconnect: None,
+            take_off: None,
+            link: None,
+            joint: None,
+            string_device: None,
+            max_series: None,
+            max_parallel: None,
+            mixed: false,
+            data_link: false,
+            opens_under_charge: false,
+            space: None,
+            air: None,
+            opening: None,
+            route: None,
+            board: None,
+            designed: false,
+        }
+    }
 }
 
 /// Voltages of charge, stated with a charging source, for the whole bank at 25 °C.

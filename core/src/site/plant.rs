@@ -7,45 +7,54 @@ use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
 use super::bank::cells;
+use super::check::At;
+use super::check::place::touch;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
+use super::model::Board;
 use super::plan::{Plan, sources};
 use super::system::{BankEntry, Site};
 use crate::battery::cell_voltages;
 use crate::citation::{Citation, Seen};
 use crate::protection::Earthing;
 
-/// Highest voltage that may be touched without basic protection in dry places, V.
-const TOUCH_V: f64 = 60.0;
 /// Upper limit of extra-low voltage, DC, V.
 const EXTRA_LOW_V: f64 = 120.0;
 /// Most lugs on one stud (R8).
 const LUGS: u32 = 4;
 
+/// What a busbar must carry, A, and what of: all that its sources let pass, or all that its loads draw (R7, R8).
+pub(super) fn busbar_need(site: &Site, plan: &Plan, board: &Board) -> (f64, &'static str) {
+    let (mut fed, mut drawn) = (0.0, 0.0);
+    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+        let Some(planned) = planned else { continue };
+        if circuit.from != board.name && circuit.to != board.name {
+            continue;
+        }
+        let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
+        let current = planned.judgement.current.get::<ampere>();
+        let other = if circuit.to == board.name { &circuit.from } else { &circuit.to };
+        // A charger limits itself: no device stands for it.
+        if site.chargers.iter().any(|c| c.name == *other) {
+            fed += current;
+        } else if towards {
+            fed += planned.fitted.first().map_or(current, |f| f.guard.device.rating.get::<ampere>());
+        } else {
+            drawn += current;
+        }
+    }
+    if fed >= drawn { (fed, "the devices and sources that feed it") } else { (drawn, "its loads") }
+}
+
 /// Busbars and studs (R8).
 pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
     for board in &site.boards {
         let place = format!("board \"{}\"", board.name);
-        let mut drawn = 0.0;
-        let mut fed = 0.0;
-        for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-            let Some(planned) = planned else { continue };
-            if circuit.from != board.name && circuit.to != board.name {
-                continue;
-            }
-            let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
-            if towards {
-                fed += planned.fitted.first().map_or_else(
-                    || planned.judgement.current.get::<ampere>(),
-                    |f| f.guard.device.rating.get::<ampere>(),
-                );
-            } else {
-                drawn += planned.judgement.current.get::<ampere>();
-            }
-        }
-        let (need, what) =
-            if fed >= drawn { (fed, "the devices that feed it") } else { (drawn, "its loads") };
+        let (need, what) = busbar_need(site, plan, board);
         match board.busbar.map(|b| b.get::<ampere>()) {
+            None if board.designed => {
+                found.pass("R8", &place, &format!("busbar to be bought for at least {} A", digits(need)));
+            }
             None => found.add(
                 Severity::NotChecked,
                 "R8",
@@ -298,7 +307,8 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
             .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
             .sum();
         plausible(bank, &place, found);
-        if bank.strings > 2 {
+        let is_told = bank.part.as_ref().is_some_and(|p| p.designed || p.take_off.is_some());
+        if bank.strings > 2 && !is_told && !site.is_whole {
             found.add(
                 Severity::NotChecked,
                 "R15",
@@ -375,23 +385,7 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
                 "",
             );
         }
-        if highest > TOUCH_V {
-            found.add(
-                Severity::NotChecked,
-                "R19",
-                "touch-protection",
-                place.clone(),
-                bank.line,
-                format!(
-                    "the bank reaches {} V, above {} V: protection against touch is not described in \
-                     the document",
-                    digits(highest),
-                    digits(TOUCH_V)
-                ),
-                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)),
-                "cover live parts and mark them",
-            );
-        }
+        touch(site, highest, None, &mut At::new(found, place.clone(), bank.line));
         let known = sources(site);
         if known.get(index).is_some_and(|e| e.by_thumb) {
             found.add(

@@ -67,7 +67,7 @@ fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
 }
 
 /// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
-fn node_load(
+pub(super) fn node_load(
     site: &Site,
     item: Item,
     nominal: ElectricPotential,
@@ -96,6 +96,8 @@ pub(super) struct Solver<'a, F> {
     pub nominal: ElectricPotential,
     /// Loop resistance of each circuit, ohm.
     pub ohms: &'a F,
+    /// Loads that do not run in this state, by place; none where it is empty.
+    pub off: &'a [bool],
 }
 
 fn run(nodes: &[TreeNode], emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
@@ -126,9 +128,18 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         run(&nodes, emf)
     }
 
+    /// Whether an item is a load that does not run.
+    fn is_off(&self, item: Item) -> bool {
+        matches!(item, Item::Load(i) if self.off.get(i).copied().unwrap_or(false))
+    }
+
     fn nodes(&self, tree: &Tree, as_current: Option<ElectricPotential>) -> Vec<TreeNode> {
         let node = |n: &Node| {
-            let mut load = node_load(self.site, n.item, self.nominal, as_current);
+            let mut load = if self.is_off(n.item) {
+                NodeLoad { reference: self.nominal, ..NodeLoad::default() }
+            } else {
+                node_load(self.site, n.item, self.nominal, as_current)
+            };
             if let Some(&amps) = self.drawn.get(&n.item) {
                 load.current += ElectricCurrent::new::<ampere>(amps);
             }
@@ -146,6 +157,9 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
     /// inverter its surge.
     fn started(&self, tree: &Tree, index: usize, emf: f64) -> Option<(f64, f64)> {
         let node = tree.nodes.get(index)?;
+        if self.is_off(node.item) {
+            return None;
+        }
         let mut load = node_load(self.site, node.item, self.nominal, None);
         match node.item {
             Item::Load(i) => {
@@ -178,7 +192,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         let site = self.site;
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
-        let starts = starts(site, tree, solved);
+        let starts = starts(self, tree, solved);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         let mut states = Vec::with_capacity(tree.nodes.len());
         for (index, node) in tree.nodes.iter().enumerate() {
@@ -251,12 +265,19 @@ fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
 }
 
 /// The largest start or surge at each node or behind it, A on top: one at a time (R16).
-fn starts(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<Option<f64>> {
+fn starts<F: Fn(usize) -> f64>(
+    solver: &Solver<'_, F>,
+    tree: &Tree,
+    states: &[NodeState],
+) -> Vec<Option<f64>> {
     let mut largest: Vec<Option<f64>> = tree
         .nodes
         .iter()
         .zip(states)
-        .map(|(n, s)| start(site, n.item, libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>()))
+        .map(|(n, s)| {
+            let (amps, volts) = (libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>());
+            if solver.is_off(n.item) { None } else { start(solver.site, n.item, amps, volts) }
+        })
         .collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
         let own = largest.get(index).copied().flatten();

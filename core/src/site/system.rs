@@ -101,6 +101,8 @@ pub(super) struct BankEntry {
     pub cells: u32,
     /// Greatest current of a source that limits itself.
     pub limit: Option<ElectricCurrent>,
+    /// Absorption voltage of a bank, compensated for its coldest.
+    pub charged_cold: Option<ElectricPotential>,
     /// `name`.
     pub name: String,
     /// Line of its header in the file, from 1.

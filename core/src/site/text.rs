@@ -40,15 +40,17 @@ impl fmt::Display for Report {
         for line in &self.system {
             writeln!(f, "{}", printable(line))?;
         }
+        super::plant_text::print(&self.plant, f)?;
         self.summary(f)?;
         self.found(f)?;
+        super::reading::section(&self.readings, f)?;
         heading(f, "Circuits in detail")?;
         for (number, circuit) in self.circuits.iter().enumerate() {
             writeln!(f)?;
             detail(f, number + 1, circuit)?;
         }
         list(f, "Passed on boards, parts, lugs and consumers", &self.passed)?;
-        self.bought(f)?;
+        super::sheet::text::print(self, f)?;
         list(f, "Taken where the document says nothing", &self.assumptions)?;
         list(
             f,
@@ -108,23 +110,6 @@ impl Report {
                 last = Some(finding.severity);
             }
             writeln!(f, "    {}", printable(&finding.to_string()))?;
-        }
-        Ok(())
-    }
-
-    fn bought(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if self.purchases.is_empty() {
-            return Ok(());
-        }
-        heading(f, "To buy (lengths without cutting allowance)")?;
-        for p in &self.purchases {
-            let price = p.price.map_or_else(String::new, |x| format!("  {x:.2}"));
-            let places = p.places.iter().map(|s| printable(s)).collect::<alloc::vec::Vec<_>>().join(", ");
-            let shelf = match p.shelf {
-                Some(held) if held < p.amount => format!("  (only {} {} on the shelf)", digits(held), p.unit),
-                _ => String::new(),
-            };
-            writeln!(f, "  {:>7} {:<4} {}: {places}{price}{shelf}", digits(p.amount), p.unit, p.what)?;
         }
         Ok(())
     }
@@ -324,7 +309,7 @@ pub(super) const fn is_of_device(check: Check) -> bool {
     )
 }
 
-fn heading(f: &mut fmt::Formatter<'_>, text: &str) -> fmt::Result {
+pub(super) fn heading(f: &mut fmt::Formatter<'_>, text: &str) -> fmt::Result {
     writeln!(f, "\n{text}")
 }
 
@@ -340,12 +325,12 @@ fn list(f: &mut fmt::Formatter<'_>, head: &str, lines: &[String]) -> fmt::Result
 }
 
 /// Names come from a file: control characters must not reach a terminal.
-fn printable(text: &str) -> String {
+pub(super) fn printable(text: &str) -> String {
     text.chars().map(|c| if c.is_control() { '\u{fffd}' } else { c }).collect()
 }
 
 /// Cuts to a number of characters.
-fn short(text: &str, most: usize) -> String {
+pub(super) fn short(text: &str, most: usize) -> String {
     if text.chars().count() <= most {
         return text.to_string();
     }

@@ -9,6 +9,7 @@ use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 
+use super::check;
 use super::finding::{Findings, Severity, digits, of_check};
 use super::graph::{Item, Tree};
 use super::joints::joints;
@@ -27,7 +28,7 @@ use crate::quantity::ElectricCurrent;
 use crate::rules::Key;
 
 /// All findings of a plan, gravest first, in the order of the document within.
-pub(super) fn findings(site: &Site, plan: &Plan) -> Findings {
+pub(super) fn findings(site: &Site, plan: &Plan, demands: &[super::energy::Demand]) -> Findings {
     let mut found = Findings::default();
     let reach = Reach::new(site, &plan.trees, &plan.circuits);
     let ends = ends(&plan.trees, site.circuits.len());
@@ -66,6 +67,7 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Findings {
     boards(site, plan, &mut found);
     consumers(site, plan, &mut found);
     banks(site, plan, &mut found);
+    check::plant(site, plan, demands, &mut found);
     found.list.sort_by_key(|f| f.severity);
     found
 }

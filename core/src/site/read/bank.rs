@@ -2,7 +2,7 @@
 
 use alloc::borrow::ToOwned;
 use alloc::format;
-use alloc::string::String;
+use alloc::string::{String, ToString};
 
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_potential::volt;
@@ -20,7 +20,7 @@ use super::plant_keys::{
 };
 use super::sections::{ROOM_WORDS, TAKE_OFF_WORDS};
 use crate::battery::Chemistry;
-use crate::quantity::Figures;
+use crate::quantity::{ElectricPotential, Figures};
 use crate::site::parts::{BankPart, StockBattery};
 
 /// Nominal voltages of lithium and nickel may be labels: 12.8 V of LFP stand for 12 V. Those of lead are exact.
@@ -72,6 +72,7 @@ pub(super) fn bank(entry: &mut Entry<'_, '_>, stock: &[StockBattery]) -> Option<
         opening: entry.quantity(&OPENING),
         route: entry.quantity(&ROUTE),
         board: named(entry, &BOARD_NAME),
+        designed: false,
         name: name.unwrap_or_default(),
     };
     in_order(entry, &part);
@@ -179,9 +180,8 @@ fn batteries_agree(entry: &mut Entry<'_, '_>, bank: &BankPart, stock: &[StockBat
     let unit_V = bank.unit.or(stock.map(|battery| battery.nominal)).map(|unit| unit.get::<volt>());
     let nominal_V = bank.nominal.map(|nominal| nominal.get::<volt>());
 
-    // MERGE: `battery::cells` comes with the branch `battery`; take the next line out then. Where a battery is stated
-    // or of the stock, its own voltage is what the cells must make; that of the stock is reported with the stock.
-    #[cfg(any())]
+    // Where a battery is stated or of the stock, its own voltage is what the cells must make; that of the stock is
+    // reported with the stock.
     if let Some(chemistry) = chemistry {
         if let Some(unit) = bank.unit {
             cells_fit(entry, &UNIT, chemistry, unit);
@@ -310,16 +310,10 @@ fn units_agree(
     Err(Contradiction)
 }
 
-// MERGE: see above.
-#[cfg(any())]
-fn cells_fit(
-    entry: &mut Entry<'_, '_>,
-    key: &Key,
-    chemistry: Chemistry,
-    volts: crate::quantity::ElectricPotential,
-) {
+/// A voltage that a whole number of cells has.
+fn cells_fit(entry: &mut Entry<'_, '_>, key: &Key, chemistry: Chemistry, volts: ElectricPotential) {
     if let Err(error) = crate::battery::cells(chemistry, volts) {
-        entry.problem(key, alloc::string::ToString::to_string(&error));
+        entry.problem(key, error.to_string());
     }
 }
 
@@ -328,8 +322,6 @@ pub(super) fn battery(entry: &mut Entry<'_, '_>) -> Option<StockBattery> {
     let name = entry.name();
     let (chemistry, nominal, capacity) =
         (entry.parsed(&CHEMISTRY), entry.quantity(&NOMINAL), entry.quantity(&CAPACITY));
-    // MERGE: see above.
-    #[cfg(any())]
     if let (Some(chemistry), Some(nominal)) = (chemistry, nominal) {
         cells_fit(entry, &NOMINAL, chemistry, nominal);
     }

@@ -6,12 +6,11 @@ use alloc::string::String;
 use alloc::vec::Vec;
 
 use super::entry::Found;
-use super::keys::{CHEMISTRY, Key, POWER, Section};
+use super::keys::{Key, POWER, Section};
 use super::log::{Cut, Log, Quoted, nearest};
 use super::nodes::{Placed, text_of};
 use super::plant_keys::{
-    BANK_NAME, BATTERY, BOARD_NAME, CONTROLLER_NAME, DELIVERED, DENSITY, INVERTER_NAME, MEASURED_AT, MODEL,
-    MODULE, ON, READ_DROP, READ_VOLTS, REST,
+    BANK_NAME, BATTERY, BOARD_NAME, CONTROLLER_NAME, INVERTER_NAME, MEASURED_AT, MODEL, MODULE, ON,
 };
 use super::sections::{
     ARRAY, BANK, CONTROLLER, GENERATOR, INVERTER, LOAD, READING, STOCK_BATTERY, STOCK_CONTROLLER,
@@ -70,9 +69,9 @@ fn known(
     what: &str,
     known: &Names<'_>,
     log: &mut Log,
-) -> bool {
+) {
     if known.contains(name) {
-        return true;
+        return;
     }
     let near = if log.count() < MOST_SEARCHED { nearest(name, known.iter().copied()) } else { None };
     let sentence = match near {
@@ -80,7 +79,6 @@ fn known(
         None => format!("no {what} is named '{}'; name one of this file, or take the line out", Cut(name)),
     };
     log.push(at, format!("{}, {}", place(), key.name), sentence);
-    false
 }
 
 pub(super) fn check(sections: &Sections<'_>, log: &mut Log) {
@@ -177,15 +175,14 @@ fn ac(sections: &Sections<'_>, log: &mut Log) {
     }
 }
 
-/// Readings are of things of the file, and of such things as have what was read.
+/// Readings are of things of the file.
 fn readings(sections: &Sections<'_>, log: &mut Log) {
     if sections.readings.is_empty() {
         return;
     }
     let loads = names(&[&sections.loads]);
-    let circuits = names(&[&sections.circuits]);
-    let banks = names(&[&sections.banks]);
-    let things = names(&[
+    // Of what sort each is, and whether what was read can be read there, tells the report.
+    let all = names(&[
         &sections.banks,
         &sections.boards,
         &sections.loads,
@@ -194,15 +191,12 @@ fn readings(sections: &Sections<'_>, log: &mut Log) {
         &sections.controllers,
         &sections.generators,
         &sections.converters,
+        &sections.circuits,
     ]);
-    let all: Names<'_> = things.union(&circuits).copied().collect();
-    let chemistries = chemistries(sections);
     for &reading in &sections.readings {
         let here = || place(&READING, reading);
-        if let Some(at) = text_of(reading, MEASURED_AT.name)
-            && known(at, here, &MEASURED_AT, "part or circuit", &all, log)
-        {
-            of_such(reading, at, &chemistries, [&things, &circuits, &banks], log);
+        if let Some(at) = text_of(reading, MEASURED_AT.name) {
+            known(at, here, &MEASURED_AT, "part or circuit", &all, log);
         }
         let on = reading.table.get(ON.name).and_then(|value| value.get_ref().as_array());
         for item in on.into_iter().flat_map(|list| list.iter()) {
@@ -211,59 +205,4 @@ fn readings(sections: &Sections<'_>, log: &mut Log) {
             }
         }
     }
-}
-
-/// Whether what was read can be read there.
-fn of_such(
-    reading: Found<'_>,
-    (at, _): Placed<'_>,
-    chemistries: &BTreeMap<&str, &str>,
-    [things, circuits, banks]: [&Names<'_>; 3],
-    log: &mut Log,
-) {
-    let wrong: [(&Key, bool, &str); 5] = [
-        (
-            &READ_VOLTS,
-            !things.contains(at),
-            "volts are read at a part, and this is a circuit; write drop, or name the part",
-        ),
-        (
-            &READ_DROP,
-            !circuits.contains(at),
-            "a drop is read along a circuit, and this is none; write volts, or name the circuit",
-        ),
-        (&DENSITY, !banks.contains(at), "it is read in a bank; name the bank, or take it out"),
-        (&REST, !banks.contains(at), "it is read at a bank; name the bank, or take it out"),
-        (&DELIVERED, !banks.contains(at), "it is read at a bank; name the bank, or take it out"),
-    ];
-    for (key, is_wrong, sentence) in wrong {
-        if let Some(value) = reading.table.get(key.name).filter(|_| is_wrong) {
-            log.push(
-                value.span().start,
-                format!("{}, {}", place(&READING, reading), key.name),
-                String::from(sentence),
-            );
-        }
-    }
-    // The electrolyte of a sealed battery cannot be drawn, and that of lithium has no density to tell.
-    if let Some(value) = reading.table.get(DENSITY.name)
-        && let Some(chemistry) = chemistries.get(at)
-        && matches!(*chemistry, "agm" | "gel" | "lfp" | "nmc")
-    {
-        let sentence = format!(
-            "no electrolyte can be drawn from {chemistry}; take it out, or mend the bank's chemistry"
-        );
-        log.push(value.span().start, format!("{}, {}", place(&READING, reading), DENSITY.name), sentence);
-    }
-}
-
-/// The chemistry of every bank that states it, or whose battery in the stock does.
-fn chemistries<'d>(sections: &Sections<'d>) -> BTreeMap<&'d str, &'d str> {
-    let pair = |found: &Found<'d>| Some((text_of(*found, "name")?.0, text_of(*found, CHEMISTRY.name)?.0));
-    let stock: BTreeMap<&str, &str> = sections.batteries.iter().filter_map(pair).collect();
-    let of_stock = |bank: &Found<'d>| {
-        let battery = text_of(*bank, BATTERY.name)?.0;
-        Some((text_of(*bank, "name")?.0, *stock.get(battery)?))
-    };
-    sections.banks.iter().filter_map(|bank| pair(bank).or_else(|| of_stock(bank))).collect()
 }

@@ -158,8 +158,6 @@ fn figures_of_a_bank_agree_or_not() {
 }
 
 /// A voltage that no whole number of cells has.
-// MERGE: with `battery::cells`, see bank.rs.
-#[cfg(any())]
 #[test]
 fn a_chemistry_has_voltages_of_its_own() {
     let bank = |figures: &str| {
