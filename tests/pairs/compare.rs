@@ -119,6 +119,21 @@ fn findings_come_go_and_change_their_severity() {
     assert_eq!(change(&new.readings, "reading \"a\"", "amps").later.as_deref(), Some("11 A above"));
 }
 
+/// Two more days of autonomy: the bank that is designed, and why.
+#[test]
+fn a_design_that_grows_tells_its_layout_and_need() {
+    let longer = HERON_POINT.replacen("autonomy = \"4 d\"", "autonomy = \"6 d\"", 1);
+    assert_ne!(longer, HERON_POINT);
+    let changes = report(&longer).compare(&report(HERON_POINT));
+    let layout = change(&changes.system, "bank \"house\"", "layout");
+    assert!(layout.earlier.is_some() && layout.later.is_some() && layout.earlier != layout.later, "{layout}");
+    assert!(
+        layout.why_earlier.contains("Ah are needed") && layout.why_later.contains("Ah are needed"),
+        "{layout}"
+    );
+    assert_ne!(layout.why_earlier, layout.why_later);
+}
+
 #[test]
 fn another_bank_is_told_in_the_system() {
     let site =

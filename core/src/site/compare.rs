@@ -8,6 +8,7 @@ use alloc::string::{String, ToString};
 use alloc::vec::Vec;
 use core::fmt;
 
+use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::length::meter;
@@ -15,13 +16,14 @@ use uom::si::power::watt;
 use uom::si::ratio::percent;
 
 use super::finding::{Finding, digits};
-use super::lines::Step;
+use super::lines::{ArrayLine, BankLine, Step};
+use super::plant_text::MONTHS;
 use super::reading::{ReadingLine, Verdict};
 use super::report::{CircuitLine, Report};
 use super::sheet::Purchase;
 use super::text::{conductor_words, device_words, is_of_device, printable};
 use crate::circuit::Outcome;
-use crate::quantity::ElectricPotential;
+use crate::quantity::{ElectricCharge, ElectricPotential};
 use crate::rules::Check;
 
 /// One thing that differs between two reports.
@@ -258,8 +260,11 @@ fn with_reason(change: Change, earlier: &Report, later: &Report) -> Change {
     let of = |report: &Report| {
         let purchase = report.purchases.iter().find(|p| p.what == change.place && p.unit == change.what)?;
         purchase.places.iter().find_map(|place| {
-            let circuit = report.circuits.iter().find(|c| c.name == *place)?;
-            Some(format!("\"{}\": {}", circuit.name, circuit.governing))
+            let circuit = report.circuits.iter().find(|c| c.name == *place);
+            let of_circuit = circuit.map(|c| format!("\"{}\": {}", c.name, c.governing));
+            let of_bank = || report.plant.banks.iter().find(|b| b.name == *place).map(needed);
+            let of_array = || report.plant.arrays.iter().find(|a| a.name == *place).map(reached);
+            of_circuit.or_else(of_bank).or_else(of_array)
         })
     };
     let (why_earlier, why_later) = (of(earlier).unwrap_or_default(), of(later).unwrap_or_default());
@@ -303,6 +308,21 @@ fn plant(earlier: &Report, later: &Report) -> Vec<Change> {
 /// Place, what of it, and its value.
 type Fact = (String, &'static str, Value);
 
+/// What the bank was sized for.
+fn needed(bank: &BankLine) -> String {
+    let ah = |q: ElectricCharge| digits(q.get::<ampere_hour>());
+    bank.needed
+        .map_or_else(String::new, |q| format!("{} Ah are needed, {} Ah are there", ah(q), ah(bank.capacity)))
+}
+
+/// What the array was sized for.
+fn reached(array: &ArrayLine) -> String {
+    let month = array.worst_month.and_then(|m| MONTHS.get(m));
+    month.zip(array.reached).map_or_else(String::new, |(month, part)| {
+        format!("in {month}, its worst month, it gives {:.0} % of what is needed", part.get::<percent>())
+    })
+}
+
 fn laid_out(report: &Report) -> Vec<Fact> {
     let decided = |steps: &[Step]| {
         steps.last().map_or_else(String::new, |s| format!("{}: {} {}", s.what, digits(s.value), s.unit))
@@ -316,14 +336,14 @@ fn laid_out(report: &Report) -> Vec<Fact> {
         let series = b.series.map_or_else(String::new, |s| format!("{s} in series, "));
         let battery = b.battery.as_ref().map_or_else(String::new, |name| format!(" of {name}"));
         let text = format!("{series}{} in parallel{battery}", b.strings);
-        facts.push((place.clone(), "layout", Value { text, why: decided(&b.steps) }));
+        facts.push((place.clone(), "layout", Value { text, why: needed(b) }));
         let text = format!("{}, back at {}", volts(b.disconnect), volts(b.reconnect));
         facts.push((place, "disconnect", Value { text, why: String::new() }));
     }
     for a in &report.plant.arrays {
         let place = format!("array \"{}\"", a.name);
         let text = format!("{} in series, {} in parallel of {}", a.series, a.strings, a.module);
-        facts.push((place.clone(), "layout", Value { text, why: decided(&a.steps) }));
+        facts.push((place.clone(), "layout", Value { text, why: reached(a) }));
         facts.push((
             place,
             "cold open-circuit voltage",
