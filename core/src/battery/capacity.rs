@@ -695,3 +695,186 @@ calculations! {
         daily_demand * autonomy.get::<day>() / factors
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+    use uom::si::time::hour;
+
+    fn ah(value: f64) -> ElectricCharge {
+        ElectricCharge::new::<ampere_hour>(value)
+    }
+    fn r(value: f64) -> Ratio {
+        Ratio::new::<ratio>(value)
+    }
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+    fn lead_acid(chemistry: Chemistry, depth: f64, daily: f64, celsius: f64) -> LeadAcidNeed {
+        LeadAcidNeed {
+            greatest_depth: r(depth),
+            daily_depth: r(daily),
+            ..LeadAcidNeed::usual(
+                chemistry,
+                ah(40.0),
+                Time::new::<day>(4.0),
+                at(celsius),
+                ElectricCurrent::new::<ampere>(10.0),
+            )
+        }
+    }
+    fn needed(need: &LeadAcidNeed) -> f64 {
+        lead_acid_capacity(need).unwrap().capacity.get::<ampere_hour>()
+    }
+
+    proptest! {
+        #[test]
+        fn deeper_or_warmer_never_needs_more(
+            place in 0usize..4, depth in 0.1..0.9f64, daily in 0.05..0.9f64, deeper in 0.0..0.1f64,
+            celsius in -3.9..50.0f64, warmer in 0.0..20.0f64,
+        ) {
+            let chemistry =
+                [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel, Chemistry::NickelCadmium][place];
+            let base = needed(&lead_acid(chemistry, depth, daily, celsius));
+            let warm = (celsius + warmer).min(51.7);
+            for other in [
+                lead_acid(chemistry, depth + deeper, daily, celsius),
+                lead_acid(chemistry, depth, daily + deeper, celsius),
+                lead_acid(chemistry, depth, daily, warm),
+            ] {
+                prop_assert!(needed(&other) <= base * (1.0 + 1e-12));
+            }
+        }
+
+        #[test]
+        fn the_capacity_fulfils_every_demand_and_no_more_than_one_to_the_brim(
+            depth in 0.1..1.0f64, daily in 0.05..1.0f64, life in 0.3..1.0f64, celsius in -3.9..50.0f64,
+            margin in 0.0..0.5f64,
+        ) {
+            let need = LeadAcidNeed { end_of_life: r(life), margin: r(margin), ..lead_acid(Chemistry::Flooded, depth, daily, celsius) };
+            let steps = lead_acid_capacity(&need).unwrap();
+            // Backwards: what is left of it without margin, in the cold.
+            let left = steps.capacity.get::<ampere_hour>() / (1.0 + margin) / steps.temperature_factor.value.value;
+            let spare = [left * depth - 160.0, left * daily - 40.0, left * life - 160.0];
+            let place = match steps.governed_by {
+                CapacityGoverned::Autonomy => 0,
+                CapacityGoverned::Daily => 1,
+                _ => 2,
+            };
+            prop_assert!(spare.iter().all(|x| *x > -1e-9), "{spare:?}");
+            prop_assert!(spare[place].abs() < 1e-9, "{spare:?}");
+        }
+
+        #[test]
+        fn lithium_in_the_cold_or_with_more_current_never_needs_less(
+            celsius in -20.0..25.0f64, colder in 0.0..10.0f64, amperes in 0.0..500.0f64, more in 0.0..100.0f64,
+        ) {
+            let need = |celsius: f64, amperes: f64| {
+                LithiumNeed::usual(Chemistry::Lfp, ah(40.0), Time::new::<day>(2.0), at(celsius), ElectricCurrent::new::<ampere>(amperes))
+            };
+            let of = |need| lithium_capacity(&need).unwrap().capacity.get::<ampere_hour>();
+            let base = of(need(celsius, amperes));
+            prop_assert!(of(need((celsius - colder).max(-20.0), amperes)) >= base);
+            prop_assert!(of(need(celsius, amperes + more)) >= base && base >= amperes * (1.0 - 1e-12));
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(bits: [u64; 8]) {
+            let [a, b, c, d, e, f, g, i] = bits.map(f64::from_bits);
+            for chemistry in Chemistry::ALL {
+                let need = LeadAcidNeed {
+                    chemistry,
+                    daily_demand: ah(a),
+                    autonomy: Time::new::<day>(b),
+                    greatest_depth: r(c),
+                    daily_depth: r(d),
+                    end_of_life: r(e),
+                    lowest_temperature: at(f),
+                    stated_factor: Some(r(g)),
+                    margin: r(i),
+                    greatest_current: ElectricCurrent::new::<ampere>(a),
+                };
+                let base = lead_acid(chemistry, 0.5, 0.2, 10.0);
+                let one_odd = LeadAcidNeed { daily_demand: ah(a), ..base };
+                for need in [need, one_odd, LeadAcidNeed { margin: r(i), ..base }, LeadAcidNeed { lowest_temperature: at(f), ..base }] {
+                    if let Ok(steps) = lead_acid_capacity(&need) {
+                        prop_assert!(steps.capacity.value.is_finite() && steps.capacity.value > 0.0);
+                    }
+                }
+                let usual = LithiumNeed::usual(chemistry, ah(a), Time::new::<day>(b), at(f), ElectricCurrent::new::<ampere>(g));
+                for need in [usual, LithiumNeed { window: r(c), end_of_life: r(d), stated_fraction: Some(r(e)), ..usual }] {
+                    if let Ok(steps) = lithium_capacity(&need) {
+                        prop_assert!(steps.capacity.value.is_finite() && steps.capacity.value > 0.0);
+                    }
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn nobody_is_credited_with_warmth() {
+        for celsius in [25.0, 30.0, 50.0, 60.0] {
+            for chemistry in [Chemistry::Flooded, Chemistry::NickelCadmium] {
+                let steps = lead_acid_capacity(&lead_acid(chemistry, 0.5, 0.2, celsius)).unwrap();
+                assert_eq!(steps.temperature_factor.value.value, 1.0, "{chemistry} at {celsius}");
+            }
+        }
+        let stated =
+            LeadAcidNeed { stated_factor: Some(r(0.9)), ..lead_acid(Chemistry::Agm, 0.5, 0.2, 40.0) };
+        assert_eq!(lead_acid_capacity(&stated).unwrap().temperature_factor.value.value, 1.0);
+    }
+
+    #[test]
+    fn below_the_table_the_makers_factor_is_asked_for_and_taken() {
+        let cold = lead_acid(Chemistry::Flooded, 0.5, 0.2, -10.0);
+        let error = lead_acid_capacity(&cold).unwrap_err();
+        assert!(
+            matches!(error, Error::TableEnds { value: -10.0, remedy, .. } if remedy.contains("state its factor")),
+            "{error}"
+        );
+        let steps = lead_acid_capacity(&LeadAcidNeed { stated_factor: Some(r(1.8)), ..cold }).unwrap();
+        assert_eq!(steps.temperature_factor.citation.seen, Seen::Stated);
+        assert!((steps.capacity.get::<ampere_hour>() - 320.0 * 1.8 * 1.1).abs() < 1e-9);
+    }
+
+    #[test]
+    fn a_recalled_cell_and_a_borrowed_table_are_named() {
+        let seen = |chemistry, celsius| capacity_factor(chemistry, at(celsius)).unwrap().citation.seen;
+        assert_eq!(seen(Chemistry::Flooded, 10.0), Seen::Page);
+        assert_eq!(seen(Chemistry::Flooded, 4.3), Seen::Recalled); // between a seen and a recalled row
+        assert_eq!(seen(Chemistry::Flooded, 50.0), Seen::Recalled);
+        assert_eq!(seen(Chemistry::Gel, 10.0), Seen::Practice);
+        assert_eq!(seen(Chemistry::NickelCadmium, 10.0), Seen::Recalled);
+        assert_eq!(capacity_factor(Chemistry::Lfp, at(10.0)).unwrap_err().slug(), "not-tabulated");
+    }
+
+    #[test]
+    fn chemistries_take_their_own_procedure() {
+        assert_eq!(
+            lead_acid_capacity(&lead_acid(Chemistry::Lfp, 0.5, 0.2, 10.0)).unwrap_err().slug(),
+            "not-tabulated"
+        );
+        let lead = LithiumNeed::usual(
+            Chemistry::Agm,
+            ah(1.0),
+            Time::new::<day>(1.0),
+            at(20.0),
+            ElectricCurrent::new::<ampere>(1.0),
+        );
+        assert_eq!(lithium_capacity(&lead).unwrap_err().slug(), "not-tabulated");
+        let frozen = LithiumNeed { chemistry: Chemistry::Lfp, lowest_temperature: at(-30.0), ..lead };
+        assert_eq!(lithium_capacity(&frozen).unwrap_err().slug(), "contradiction");
+    }
+
+    #[test]
+    fn without_a_current_there_is_no_functional_time() {
+        let need = LeadAcidNeed {
+            greatest_current: ElectricCurrent::new::<ampere>(0.0),
+            ..lead_acid(Chemistry::Agm, 0.5, 0.2, 20.0)
+        };
+        assert_eq!(lead_acid_capacity(&need).unwrap().functional_time, None);
+        let hours = lead_acid_capacity(&lead_acid(Chemistry::Agm, 0.5, 0.2, 25.0)).unwrap().functional_time;
+        assert!((hours.unwrap().get::<hour>() - 35.2).abs() < 1e-9); // 160/0.5·1.1 Ah by 10 A
+    }
+}

@@ -6,7 +6,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use uom::si::time::day;
 
 use super::charge::checked_celsius;
-use super::{Chemistry, charge_limit, data, line, rest_table};
+use super::{Chemistry, Datum, capacity_factor, charge_limit, cold_fraction, data, line, rest_table};
 use crate::catalogue::calculations;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
@@ -234,6 +234,9 @@ calculations! {
 
     /// Days until loads alone have brought a bank down to a state of charge, while the cold admits no charge.
     ///
+    /// The cold takes its part in two ways, of which the one that leaves less counts: in proportion, as a bank is sized, and from
+    /// the bottom, where the voltage of a cold cell has fallen before it is empty.
+    ///
     /// # Example
     /// 200 Ah of LFP from 90 to 10 %, of which the cold leaves 70 %, with 16 Ah a day:
     /// ```
@@ -245,7 +248,7 @@ calculations! {
     fn days_to_disconnect(
         /// Of the bank, rated.
         capacity: ElectricCharge in ampere_hour [> 0.0],
-        /// At the beginning.
+        /// State of charge at the beginning.
         start: Ratio in ratio [0.0 ..= 1.0],
         /// At which the loads are dropped.
         least: Ratio in ratio [0.0 ..= 1.0],
@@ -255,9 +258,17 @@ calculations! {
         daily_demand: ElectricCharge in ampere_hour [> 0.0],
     ) -> duration: Time in day
     where (least <= start) least in ratio: "it must not be above the start"
-    formula "t = f·C·(s₀ − s₁)/Q"
-    source "charge balance"
-    { Time::new::<day>((cold_fraction * capacity * (start - least) / daily_demand).value) }
+    formula "t = max(0, min(f·(s₀ − s₁), s₀ − (1 − f)))·C/Q"
+    source "charge balance; that the cold takes from the bottom is our reading of capacities in the cold"
+    {
+        let part = usable_part(start.value, least.value, cold_fraction.value);
+        Time::new::<day>(part * (capacity / daily_demand).value)
+    }
+}
+
+/// Part of the rated capacity that comes out between two states of charge where the cold leaves a fraction.
+fn usable_part(start: f64, least: f64, fraction: f64) -> f64 {
+    (fraction * (start - least)).min(start - (1.0 - fraction)).max(0.0)
 }
 
 /// A bank that drains while the cold may block its charge.
@@ -271,8 +282,9 @@ pub struct ColdSpell {
     pub start: StateOfCharge,
     /// Temperature of the cells throughout.
     pub temperature: ThermodynamicTemperature,
-    /// Part of the capacity that the cold leaves: for lead-acid 1 over its temperature factor, else the cold fraction.
-    pub cold_fraction: Ratio,
+    /// Part of the capacity that the maker states there; else, for lead-acid, one over its temperature factor, for the others
+    /// [`cold_fraction`].
+    pub stated_fraction: Option<Ratio>,
     /// Charge that the loads take in a day.
     pub daily_demand: ElectricCharge,
     /// Distance kept from the freezing point.
@@ -297,6 +309,8 @@ pub struct ColdSpellOutcome {
     pub floor: StateOfCharge,
     /// What sets it.
     pub floor_by: DischargeFloor,
+    /// Part of the capacity that the cold leaves.
+    pub cold_fraction: Datum<Ratio>,
     /// Charge that the loads get until then; nought where the bank begins below the floor.
     pub usable: ElectricCharge,
     /// Time until then.
@@ -307,7 +321,7 @@ pub struct ColdSpellOutcome {
 ///
 /// # Errors
 /// [`Error::OutOfRange`] where a quantity is NaN, infinite or not above nought; [`Error::TableEnds`] where even a full
-/// battery does not keep the margin from freezing.
+/// battery does not keep the margin from freezing, or where no capacity is held for that temperature and none is stated.
 ///
 /// # Example
 /// A telemetry mast on AGM at −20 °C: the freezing of acid, not the depth, ends its discharge.
@@ -319,7 +333,7 @@ pub struct ColdSpellOutcome {
 ///     capacity: parse("100 Ah")?,
 ///     start: StateOfCharge::new(1.0)?,
 ///     temperature: parse("-20 degC")?,
-///     cold_fraction: parse("50 %")?,
+///     stated_fraction: Some(parse("50 %")?),
 ///     daily_demand: parse("5 Ah")?,
 ///     margin: parse("5 K")?,
 /// })?;
@@ -335,14 +349,147 @@ pub fn cold_spell(spell: &ColdSpell) -> Result<ColdSpellOutcome, Error> {
         Some(freezing) if freezing.get() > deepest => (freezing, DischargeFloor::Freezing),
         _ => (StateOfCharge::new(deepest)?, DischargeFloor::Depth),
     };
-    let least = if floor < spell.start { floor } else { spell.start };
-    let until_disconnect = days_to_disconnect(
-        spell.capacity,
-        Ratio::new::<ratio>(spell.start.get()),
-        Ratio::new::<ratio>(least.get()),
-        spell.cold_fraction,
-        spell.daily_demand,
-    )?;
-    let usable = spell.cold_fraction * spell.capacity * (spell.start.get() - least.get());
-    Ok(ColdSpellOutcome { charge_admitted, floor, floor_by, usable, until_disconnect })
+    let cold_fraction = fraction_of(spell)?;
+    let start = Ratio::new::<ratio>(spell.start.get());
+    let least = Ratio::new::<ratio>(floor.get().min(spell.start.get()));
+    let until_disconnect =
+        days_to_disconnect(spell.capacity, start, least, cold_fraction.value, spell.daily_demand)?;
+    let usable = spell.capacity * usable_part(start.value, least.value, cold_fraction.value.value);
+    Ok(ColdSpellOutcome { charge_admitted, floor, floor_by, cold_fraction, usable, until_disconnect })
+}
+
+fn fraction_of(spell: &ColdSpell) -> Result<Datum<Ratio>, Error> {
+    if let Some(value) = spell.stated_fraction {
+        let citation = Citation::new("the maker's capacity", "as stated", Seen::Stated);
+        return Ok(Datum { value, citation });
+    }
+    if !spell.chemistry.is_lead_acid() {
+        return cold_fraction(spell.chemistry, spell.temperature);
+    }
+    let one = Ratio::new::<ratio>(1.0);
+    let Datum { value, citation } = capacity_factor(spell.chemistry, spell.temperature)?;
+    let fraction = one / value;
+    // Warmth is no reason to count on more than the rating.
+    Ok(Datum { value: if fraction > one { one } else { fraction }, citation })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+    use uom::si::electric_charge::ampere_hour;
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+    fn k(value: f64) -> TemperatureInterval {
+        TemperatureInterval::new::<kelvin>(value)
+    }
+    fn soc(part: f64) -> StateOfCharge {
+        StateOfCharge::new(part).unwrap()
+    }
+
+    #[test]
+    fn acid_freezes_the_later_the_fuller_it_is() {
+        for chemistry in [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel] {
+            let mut last = 1.0;
+            for percent in 0..=100 {
+                let now = freezing_degC(chemistry, f64::from(percent) / 100.0).unwrap();
+                assert!(now <= last && now < 0.0, "{chemistry}, {percent} %");
+                last = now;
+            }
+        }
+        assert_eq!(freezes(Chemistry::Lfp, soc(0.0), at(-40.0), k(5.0)), Ok(None));
+    }
+
+    /// The table is bent one way between its rows, so that a straight line lies below it: by less than the margin.
+    #[test]
+    fn the_margin_covers_the_line_between_rows() {
+        for w in ACID.windows(4) {
+            let line = |a: (f64, f64), b: (f64, f64), x: f64| a.1 + (b.1 - a.1) * (x - a.0) / (b.0 - a.0);
+            for part in 1..20 {
+                let x = w[1].0 + (w[2].0 - w[1].0) * f64::from(part) / 20.0;
+                // The rows before, drawn on, freeze at a higher temperature than a curve that bends downward.
+                let within = line(w[1], w[2], x) - line(w[0], w[1], x).max(line(w[2], w[3], x));
+                assert!(within < FREEZING_MARGIN_K, "{x}: {within} K");
+            }
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn at_the_floor_the_margin_is_kept_and_just_below_it_is_not(
+            place in 0usize..3, celsius in -60.0..10.0f64, margin in 0.0..8.0f64,
+        ) {
+            let chemistry = [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel][place];
+            let Ok(Some(floor)) = freezing_floor(chemistry, at(celsius), k(margin)) else {
+                let full = freezes(chemistry, soc(1.0), at(celsius), k(margin)).unwrap();
+                prop_assert_eq!(full, Some(true), "refused, though a full battery keeps the margin");
+                return Ok(());
+            };
+            let left = |charge| freezing_margin(chemistry, soc(charge), at(celsius)).unwrap().unwrap().value;
+            prop_assert!(left(floor.get()) >= margin - 1e-9);
+            prop_assert!(floor.get() == 0.0 || left(floor.get() - 1e-4) < margin);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(bits: [u64; 4]) {
+            let [a, b, c, d] = bits.map(f64::from_bits);
+            for chemistry in Chemistry::ALL {
+                let _ = freezing_floor(chemistry, at(a), k(b));
+                let outcome = cold_spell(&ColdSpell {
+                    chemistry,
+                    capacity: ElectricCharge::new::<ampere_hour>(c),
+                    start: soc(0.9),
+                    temperature: at(if b > 0.0 { a } else { -10.0 }),
+                    stated_fraction: Some(Ratio::new::<ratio>(0.5)),
+                    daily_demand: ElectricCharge::new::<ampere_hour>(d),
+                    margin: k(5.0),
+                });
+                if let Ok(outcome) = outcome {
+                    prop_assert!(outcome.until_disconnect.value >= 0.0 && outcome.usable.value >= 0.0);
+                }
+            }
+        }
+    }
+
+    fn spell(
+        chemistry: Chemistry,
+        start: f64,
+        celsius: f64,
+        fraction: Option<f64>,
+    ) -> Result<ColdSpellOutcome, Error> {
+        cold_spell(&ColdSpell {
+            chemistry,
+            capacity: ElectricCharge::new::<ampere_hour>(100.0),
+            start: soc(start),
+            temperature: at(celsius),
+            stated_fraction: fraction.map(Ratio::new::<ratio>),
+            daily_demand: ElectricCharge::new::<ampere_hour>(10.0),
+            margin: k(5.0),
+        })
+    }
+
+    #[test]
+    fn lithium_in_frost_drains_without_charge_and_lead_acid_is_charged_still() {
+        let lfp = spell(Chemistry::Lfp, 1.0, -10.0, None).unwrap();
+        assert!(!lfp.charge_admitted && lfp.floor_by == DischargeFloor::Depth);
+        // 100 Ah, of which nine tenths, of which 0.7.
+        assert!((lfp.until_disconnect.get::<day>() - 6.3).abs() < 1e-9);
+        let flooded = spell(Chemistry::Flooded, 1.0, 1.7, None).unwrap();
+        assert!(flooded.charge_admitted);
+        assert!((flooded.cold_fraction.value.value - 1.0 / 1.35).abs() < 1e-12);
+        // Below its table the cold of lead-acid must be stated.
+        assert_eq!(spell(Chemistry::Flooded, 1.0, -10.0, None).unwrap_err().slug(), "table-ends");
+        assert!(spell(Chemistry::Flooded, 1.0, -10.0, Some(0.6)).is_ok());
+    }
+
+    #[test]
+    fn a_bank_below_its_floor_has_nothing_to_give() {
+        let outcome = spell(Chemistry::Flooded, 0.3, -20.0, Some(0.5)).unwrap();
+        assert_eq!(outcome.floor_by, DischargeFloor::Freezing);
+        assert_eq!((outcome.usable.value, outcome.until_disconnect.value), (0.0, 0.0));
+        // Half full, of which the cold leaves the upper half alone: nothing comes out either.
+        assert_eq!(spell(Chemistry::Lfp, 0.5, -10.0, Some(0.5)).unwrap().usable.value, 0.0);
+    }
 }

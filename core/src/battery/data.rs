@@ -199,7 +199,7 @@ const LFP: ChemistryData = ChemistryData {
     storage_degC: datum((-20.0, 45.0), SHEETS),
     discharge_degC: datum((-20.0, 60.0), LFP_PAGES),
     peukert: datum((1.01, 1.05), EXPONENTS),
-    kinetic: wells(0.9, 4.0),
+    kinetic: wells(0.95, 0.5),
     cycles: datum(&LFP_CYCLES, CYCLE_TABLE),
     drop_V_h: datum(0.12, PRACTICE),
     vented: datum(false, HANDBOOK),
@@ -221,7 +221,7 @@ const NMC: ChemistryData = ChemistryData {
     storage_degC: datum((-20.0, 45.0), SHEETS),
     discharge_degC: datum((-20.0, 60.0), SHEETS),
     peukert: datum((1.01, 1.08), EXPONENTS),
-    kinetic: wells(0.85, 4.0),
+    kinetic: wells(0.93, 0.5),
     cycles: datum(&NMC_CYCLES, CYCLE_TABLE),
     drop_V_h: datum(0.15, PRACTICE),
     vented: datum(false, HANDBOOK),
@@ -394,4 +394,118 @@ pub fn is_within(
     }
     let (least, most) = limits_degC.value;
     Ok(celsius >= least && celsius <= most)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::battery::{charge_bands, discharge_limit, resistance_rise};
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+
+    fn parts(held: &ChemistryData) -> [f64; 7] {
+        [
+            held.greatest_depth.value,
+            held.usual_depth.value,
+            held.daily_depth.value,
+            held.charge_efficiency.value,
+            held.energy_efficiency.value,
+            held.self_discharge_per_month.value,
+            held.end_of_life.value,
+        ]
+    }
+
+    #[test]
+    fn each_part_is_one_and_each_limit_is_in_order() {
+        for chemistry in Chemistry::ALL {
+            let held = data(chemistry);
+            assert_eq!(held.chemistry, chemistry);
+            assert!(parts(held).iter().all(|part| *part > 0.0 && *part <= 1.0), "{chemistry}");
+            assert!(held.daily_depth.value <= held.usual_depth.value, "{chemistry}");
+            assert!(held.usual_depth.value <= held.greatest_depth.value, "{chemistry}");
+            // Energy is lost with the charge, and to resistance besides.
+            assert!(held.energy_efficiency.value < held.charge_efficiency.value, "{chemistry}");
+            for (least, most) in [held.storage_degC.value, held.discharge_degC.value, held.peukert.value] {
+                assert!(least < most, "{chemistry}");
+            }
+            assert!(held.peukert.value.0 >= 1.0 && held.life_years.value >= 1.0, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn one_figure_stands_in_one_place_or_in_two_that_agree() {
+        use uom::si::electric_potential::volt;
+        for chemistry in Chemistry::ALL {
+            let held = data(chemistry);
+            assert_eq!(held.nominal_cell_V.value, chemistry.nominal_cell().get::<volt>());
+            // Where a rate of discharge is held, it ends where these limits do.
+            let (least, most) = held.discharge_degC.value;
+            for (celsius, admitted) in
+                [(least, true), (most, true), (least - 0.1, false), (most + 0.1, false)]
+            {
+                if let Some((rate, _)) = discharge_limit(chemistry, at(celsius)).unwrap() {
+                    assert_eq!(rate.get() > 0.0, admitted, "{chemistry} at {celsius}");
+                }
+                assert_eq!(is_within(held.discharge_degC, at(celsius)), Ok(admitted));
+            }
+            // Whoever charges a bank may discharge it, too.
+            let bands = charge_bands(chemistry);
+            assert!(bands[0].from_degC >= least && bands[bands.len() - 1].upto_degC <= most, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn a_recalled_cycle_table_falls_with_depth_but_not_faster_than_charge_moved() {
+        for chemistry in Chemistry::ALL {
+            for pair in data(chemistry).cycles.value.windows(2) {
+                assert!(pair[0].0 < pair[1].0 && pair[0].1 > pair[1].1, "{chemistry}");
+            }
+        }
+    }
+
+    #[test]
+    fn cold_takes_capacity_and_below_the_table_there_is_none() {
+        for chemistry in [Chemistry::Lfp, Chemistry::Nmc, Chemistry::NickelCadmium] {
+            let part = |celsius| cold_fraction(chemistry, at(celsius)).map(|f| f.value.value);
+            let mut last = 0.0;
+            for tenth in -200..=600 {
+                let now = part(f64::from(tenth) / 10.0).unwrap();
+                assert!(now >= last && now <= 1.0, "{chemistry} at {tenth}");
+                last = now;
+            }
+            assert_eq!(part(25.0), Ok(1.0));
+            assert_eq!(part(-20.1).unwrap_err().slug(), "table-ends");
+            assert_eq!(part(f64::NAN).unwrap_err().slug(), "out-of-range");
+            // The table begins where discharge does.
+            assert_eq!(data(chemistry).cold_capacity.value[0].0, data(chemistry).discharge_degC.value.0);
+        }
+        assert_eq!(cold_fraction(Chemistry::Agm, at(0.0)).unwrap_err().slug(), "not-tabulated");
+    }
+
+    #[test]
+    fn resistance_runs_through_the_stated_points() {
+        for chemistry in Chemistry::ALL {
+            let rise = resistance_rise(chemistry);
+            let factor = |charge, celsius| {
+                resistance_factor(chemistry, StateOfCharge::new(charge).unwrap(), at(celsius)).unwrap().value
+            };
+            assert!((factor(1.0, 25.0) - 1.0).abs() < 1e-15);
+            assert!((factor(0.0, 25.0) - rise.discharged).abs() < 1e-12);
+            assert!((factor(1.0, -10.0) - rise.cold).abs() < 1e-12);
+            assert!(factor(1.0, 40.0) < 1.0 && factor(0.5, -30.0) > factor(0.5, -20.0));
+            assert!(resistance_factor(chemistry, StateOfCharge::new(1.0).unwrap(), at(f64::NAN)).is_err());
+        }
+    }
+
+    #[test]
+    fn heat_shortens_life_and_cold_does_not_lengthen_it() {
+        for chemistry in Chemistry::ALL {
+            let held = data(chemistry);
+            let hot = 25.0 + held.life_halving_K.value;
+            assert!((life_years(chemistry, at(hot)).unwrap() - 0.5 * held.life_years.value).abs() < 1e-12);
+            assert_eq!(life_years(chemistry, at(-10.0)), Ok(held.life_years.value));
+        }
+    }
 }

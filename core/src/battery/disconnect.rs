@@ -157,3 +157,65 @@ calculations! {
         })
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+    use uom::si::thermodynamic_temperature::degree_celsius;
+
+    fn found(chemistry: Chemistry, rate: f64, celsius: f64) -> Result<Disconnect, Error> {
+        let temperature = ThermodynamicTemperature::new::<degree_celsius>(celsius);
+        disconnect(chemistry, 1, ChargeRate::per_hour(rate)?, temperature)
+    }
+
+    proptest! {
+        #[test]
+        fn more_current_lowers_it_and_it_stays_within_what_a_cell_bears(
+            place in 0usize..6, rate in 0.0..2.0f64, more in 0.0..2.0f64, celsius in -20.0..50.0f64,
+        ) {
+            let chemistry = Chemistry::ALL[place];
+            let slow = found(chemistry, rate, celsius).unwrap();
+            let fast = found(chemistry, rate + more, celsius).unwrap();
+            prop_assert!(fast.disconnect <= slow.disconnect && fast.floor == slow.floor);
+            prop_assert!(fast.disconnect.value >= cell_voltages(chemistry).empty_V);
+            prop_assert!(slow.disconnect <= slow.at_rest && slow.at_rest < slow.reconnect);
+            // Reconnect is reached by charging.
+            let charged = super::super::set_points::cell_set_points(chemistry).absorption_V.0;
+            prop_assert!(slow.reconnect.value < charged, "{chemistry}: {:?}", slow.reconnect);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(celsius: u64, rate in 0.0..1000.0f64, cells: u32) {
+            let temperature = ThermodynamicTemperature::new::<degree_celsius>(f64::from_bits(celsius));
+            for chemistry in Chemistry::ALL {
+                if let Ok(found) = disconnect(chemistry, cells, ChargeRate::per_hour(rate).unwrap(), temperature) {
+                    prop_assert!(found.disconnect.value.is_finite() && found.reconnect > found.disconnect);
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn frost_raises_the_state_of_charge_at_which_loads_are_dropped() {
+        let warm = found(Chemistry::Flooded, 0.05, 20.0).unwrap();
+        let cold = found(Chemistry::Flooded, 0.05, -20.0).unwrap();
+        assert_eq!((warm.floor_by, cold.floor_by), (DischargeFloor::Depth, DischargeFloor::Freezing));
+        assert!(cold.floor.get() > 0.5 && cold.at_rest > warm.at_rest);
+        assert_eq!(found(Chemistry::Flooded, 0.05, -55.0).unwrap().floor_by, DischargeFloor::Freezing);
+        assert_eq!(found(Chemistry::NickelCadmium, 0.05, -24.0).unwrap_err().slug(), "table-ends");
+        assert_eq!(found(Chemistry::Lfp, 0.05, -20.0).unwrap().floor_by, DischargeFloor::Depth);
+    }
+
+    #[test]
+    fn the_entry_is_the_function() {
+        for chemistry in Chemistry::ALL {
+            let rate = ChargeRate::per_hour(0.1).unwrap();
+            let temperature = ThermodynamicTemperature::new::<degree_celsius>(0.0);
+            let whole = disconnect(chemistry, 8, rate, temperature).unwrap();
+            let entry = disconnect_voltage(chemistry, Ratio::new::<ratio>(8.0), rate, temperature).unwrap();
+            assert_eq!((entry.disconnect, entry.reconnect), (whole.disconnect, whole.reconnect));
+            assert_eq!(entry.state_of_charge.value, whole.floor.get());
+        }
+    }
+}

@@ -9,6 +9,7 @@ mod data;
 mod disconnect;
 mod fault;
 mod kinetic;
+mod kinetic_fit;
 mod layout;
 mod line;
 mod peukert;
@@ -26,7 +27,7 @@ pub use capacity::{
     bank_capacity_end_of_life, bank_capacity_lithium, capacity_factor, functional_time, lead_acid_capacity,
     lithium_capacity, temperature_factor,
 };
-pub use cells::cells;
+pub use cells::{SeriesCells, cells, series_cells};
 pub use charge::{
     ChargeCurrentLimit, ChargeLimit, TemperatureBand, charge_bands, charge_current_limit, charge_limit,
     discharge_current_limit, discharge_limit,
@@ -46,6 +47,7 @@ pub use fault::{
     short_circuit_estimate,
 };
 pub use kinetic::{Kinetic, Wells, kinetic_capacity, kinetic_lifetime};
+pub use kinetic_fit::{HourRate, KineticFit, kinetic_available_part};
 pub use layout::{Layout, Unit, laid_out, layout};
 pub use peukert::{delivered_charge, hour_rate_capacity, peukert_exponent};
 pub use set_points::{
@@ -67,12 +69,14 @@ pub const CATALOGUE: &[&[Entry]] = &[
     charge::ENTRIES,
     fault::ENTRIES,
     capacity::ENTRIES,
+    cells::ENTRIES,
     set_points::ENTRIES,
     disconnect::ENTRIES,
     state::ENTRIES,
     cold::ENTRIES,
     peukert::ENTRIES,
     kinetic::ENTRIES,
+    kinetic_fit::ENTRIES,
     wear::ENTRIES,
     ventilation::ENTRIES,
 ];

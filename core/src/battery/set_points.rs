@@ -377,3 +377,90 @@ calculations! {
 pub const fn compensation(chemistry: Chemistry) -> VoltagePerTemperature {
     volts_per_kelvin(cell_set_points(chemistry).compensation_V_per_K)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::battery::{cell_voltages, fault_voltage};
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+
+    #[test]
+    fn float_lies_below_absorption_and_absorption_below_equalisation() {
+        for chemistry in Chemistry::ALL {
+            let points = set_points(chemistry, 4, at(25.0)).unwrap();
+            assert!(points.absorption.low < points.absorption.high, "{chemistry}");
+            if let Some(float) = points.float {
+                assert!(float.low < float.high && float.high <= points.absorption.high, "{chemistry}");
+                assert!(float.usual() < points.absorption.usual());
+            }
+            if let Some(equalise) = points.equalise {
+                assert!(equalise.low <= equalise.high && equalise.usual() > points.absorption.usual());
+            }
+            // Charging lies above rest, and above the least that makes a charge plausible.
+            let cell = cell_set_points(chemistry);
+            assert!(cell.absorption_V.0 >= cell_voltages(chemistry).charge_V, "{chemistry}");
+            assert!(cell.absorption_V.1 > fault_voltage(chemistry).least_V, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn compensation_runs_with_the_cold_and_stands_still_at_its_ends() {
+        for chemistry in Chemistry::ALL {
+            let voltage = |celsius| set_points(chemistry, 6, at(celsius)).unwrap().greatest().get::<volt>();
+            assert!(voltage(0.0) >= voltage(25.0) && voltage(25.0) >= voltage(40.0), "{chemistry}");
+            assert_eq!((voltage(-20.0), voltage(50.0)), (voltage(-45.0), voltage(90.0)), "{chemistry}");
+            let steps = 6.0 * cell_set_points(chemistry).compensation_V_per_K;
+            assert!((voltage(35.0) - voltage(25.0) - 10.0 * steps).abs() < 1e-12, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn a_stated_voltage_is_judged_and_nan_never_passes() {
+        let range = set_points(Chemistry::Flooded, 1, at(25.0)).unwrap().absorption;
+        let standing = |v: f64| range.standing(ElectricPotential::new::<volt>(v));
+        assert_eq!(
+            [2.39, 2.4, 2.45, 2.47, 2.48].map(standing),
+            [Standing::Below, Standing::Within, Standing::Within, Standing::Within, Standing::Above]
+        );
+        assert_eq!(standing(f64::NAN), Standing::NotANumber);
+        assert_eq!(
+            (standing(f64::INFINITY), standing(f64::NEG_INFINITY)),
+            (Standing::Above, Standing::Below)
+        );
+    }
+
+    #[test]
+    fn the_entries_are_the_middle_of_the_ranges() {
+        for chemistry in Chemistry::ALL {
+            for celsius in [-30.0, 0.0, 25.0, 60.0] {
+                let points = set_points(chemistry, 12, at(celsius)).unwrap();
+                let twelve = Ratio::new::<uom::si::ratio::ratio>(12.0);
+                let close = |a: ElectricPotential, b: ElectricPotential| assert!((a - b).value.abs() < 1e-12);
+                close(absorption_voltage(chemistry, twelve, at(celsius)).unwrap(), points.absorption.usual());
+                match points.float {
+                    Some(float) => {
+                        close(float_voltage(chemistry, twelve, at(celsius)).unwrap(), float.usual())
+                    }
+                    None => assert!(float_voltage(chemistry, twelve, at(celsius)).is_err()),
+                }
+                match points.equalise {
+                    Some(range) => {
+                        close(equalising_voltage(chemistry, twelve, at(celsius)).unwrap(), range.usual())
+                    }
+                    None => assert!(equalising_voltage(chemistry, twelve, at(celsius)).is_err()),
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn no_cells_and_no_temperature_are_refused() {
+        assert!(set_points(Chemistry::Agm, 0, at(25.0)).is_err());
+        for odd in [f64::NAN, f64::INFINITY, -61.0, 101.0] {
+            assert!(set_points(Chemistry::Agm, 6, at(odd)).is_err());
+        }
+    }
+}

@@ -374,3 +374,80 @@ calculations! {
     source "battery council table, page seen; for electrolyte of 1.265 when full"
     { Ratio::new::<ratio>(line::reached(&FLOODED_DENSITY, density.value)) }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    fn v(volts: f64) -> ElectricPotential {
+        ElectricPotential::new::<volt>(volts)
+    }
+
+    #[test]
+    fn tables_rise_with_charge() {
+        for chemistry in Chemistry::ALL {
+            let table = rest_table(chemistry);
+            for rows in [Some(table.voltage_V), table.density].into_iter().flatten() {
+                assert_eq!((rows.value[0].0, rows.value[rows.value.len() - 1].0), (0.0, 1.0), "{chemistry}");
+                assert!(rows.value.windows(2).all(|w| w[0].0 < w[1].0 && w[0].1 < w[1].1), "{chemistry}");
+            }
+            assert_eq!(table.density.is_some(), chemistry.is_lead_acid());
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn the_true_state_of_charge_is_never_left_out(
+            place in 0usize..6, cells in 1u32..30, charge in 0.0..=1.0f64, error in -0.05..0.05f64,
+        ) {
+            let chemistry = Chemistry::ALL[place];
+            let one = line::held(rest_table(chemistry).voltage_V.value, charge);
+            // A meter that is wrong by no more than it says, and a cell that differs by no more than the spread.
+            let reading = f64::from(cells) * (one + 0.99 * rest_table(chemistry).spread_V.value) + error;
+            let found = state_of_charge(chemistry, cells, v(reading), v(0.05)).unwrap();
+            prop_assert!(found.least.get() <= charge + 1e-9 && charge <= found.greatest.get() + 1e-9, "{found:?}");
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(voltage: u64, error: u64, cells: u32) {
+            for chemistry in Chemistry::ALL {
+                let read = state_of_charge(chemistry, cells, v(f64::from_bits(voltage)), v(f64::from_bits(error)));
+                if let Ok(range) = read {
+                    prop_assert!(range.least <= range.greatest);
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn the_plateau_of_lfp_is_no_gauge_and_its_ends_are() {
+        let estimate = |volts| state_of_charge(Chemistry::Lfp, 4, v(volts), v(0.02)).unwrap().estimate();
+        for plateau in [13.1, 13.15, 13.2, 13.25, 13.3] {
+            assert_eq!(estimate(plateau), None, "{plateau} V");
+        }
+        for (volts, least, most) in [(12.0, 0.0, 0.1), (12.7, 0.0, 0.2), (13.55, 0.9, 1.0)] {
+            let found = estimate(volts).unwrap().get();
+            assert!((least..=most).contains(&found), "{volts} V: {found}");
+        }
+    }
+
+    #[test]
+    fn a_reading_under_charge_and_a_dead_cell_are_named() {
+        let told = |volts| state_of_charge(Chemistry::Flooded, 6, v(volts), v(0.02)).unwrap_err();
+        assert!(matches!(told(14.2), Error::Contradiction { why, .. } if why.contains("let it rest")));
+        assert!(matches!(told(10.3), Error::Contradiction { why, .. } if why.contains("a cell has failed")));
+        assert!(state_of_charge(Chemistry::Flooded, 0, v(12.5), v(0.0)).is_err());
+        assert!(state_of_charge(Chemistry::Flooded, 6, v(12.5), v(-0.1)).is_err());
+    }
+
+    #[test]
+    fn density_and_charge_go_there_and_back() {
+        for percent in 0..=100 {
+            let charge = StateOfCharge::new(f64::from(percent) / 100.0).unwrap();
+            let density = relative_density(Chemistry::Flooded, charge).unwrap();
+            let back = state_of_charge_from_density(density).unwrap().value;
+            assert!((back - charge.get()).abs() < 1e-12, "{percent} %");
+        }
+    }
+}

@@ -147,3 +147,44 @@ calculations! {
         Ok(Length::new::<millimeter>(distance))
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use uom::si::ratio::ratio;
+
+    fn flow(chemistry: Chemistry, stage: ChargeStage, cells: f64, capacity: f64) -> Result<f64, Error> {
+        let capacity = ElectricCharge::new::<ampere_hour>(capacity);
+        ventilation_flow(chemistry, stage, Ratio::new::<ratio>(cells), capacity)
+            .map(|q| q.get::<cubic_meter_per_hour>())
+    }
+
+    #[test]
+    fn boost_needs_more_than_float_and_sealed_less_than_vented() {
+        for chemistry in [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel, Chemistry::NickelCadmium] {
+            let [float, boost] =
+                [ChargeStage::Float, ChargeStage::Boost].map(|s| flow(chemistry, s, 12.0, 100.0).unwrap());
+            assert!(0.0 < float && float < boost, "{chemistry}");
+            // In proportion to cells and capacity.
+            assert!((flow(chemistry, ChargeStage::Boost, 24.0, 300.0).unwrap() - 6.0 * boost).abs() < 1e-12);
+            let of =
+                |vented, sealed| if crate::battery::data(chemistry).vented.value { vented } else { sealed };
+            assert!((float - of(0.3, 0.06)).abs() < 1e-12, "{chemistry}: {float}");
+        }
+        for chemistry in [Chemistry::Lfp, Chemistry::Nmc] {
+            assert_eq!(flow(chemistry, ChargeStage::Float, 4.0, 100.0).unwrap_err().slug(), "not-tabulated");
+        }
+    }
+
+    /// The rounded factor of the standard against what it is rounded from: Faraday's law, 4 % by volume, five times over.
+    #[test]
+    fn the_flow_keeps_hydrogen_at_a_fifth_of_its_lower_limit() {
+        // One electron for each H: half a mole of H2 for each mole of charge, 22.4 l/mol at 0 °C.
+        let hydrogen_m3_per_Ah: f64 = 0.5 * 22.414e-3 * 3600.0 / 96485.0;
+        assert!((hydrogen_m3_per_Ah - 0.42e-3).abs() < 0.005e-3);
+        // 24 parts of air to one of hydrogen keep it at 4 %; five times as much keep it at a fifth of that. Rounded down by the
+        // standard from 0.0504.
+        let per_milliampere = 5.0 * 24.0 * hydrogen_m3_per_Ah * 1e-3;
+        assert!((FLOW_PER_MILLIAMPERE / per_milliampere - 1.0).abs() < 0.01);
+    }
+}
