@@ -99,7 +99,7 @@ pub fn capacity_factor(
 ) -> Result<Datum<Ratio>, Error> {
     match chemistry {
         Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel => {
-            let celsius = checked_celsius(temperature)?;
+            let celsius = line::printed(checked_celsius(temperature)?);
             let factor = factor_at(celsius)?;
             let seen = celsius >= SEEN_degC.0 && celsius <= SEEN_degC.1;
             let citation = if chemistry != Chemistry::Flooded {
@@ -128,7 +128,7 @@ pub fn capacity_factor(
 }
 
 fn factor_at(celsius: f64) -> Result<f64, Error> {
-    line::between(&TEMPERATURE_FACTORS, celsius).ok_or(Error::TableEnds {
+    line::between(&TEMPERATURE_FACTORS, line::printed(celsius)).ok_or(Error::TableEnds {
         what: "lowest temperature of the electrolyte",
         value: celsius,
         unit: "degC",

@@ -292,7 +292,7 @@ pub fn cold_fraction(
     chemistry: Chemistry,
     temperature: ThermodynamicTemperature,
 ) -> Result<Datum<Ratio>, Error> {
-    let celsius = super::charge::checked_celsius(temperature)?;
+    let celsius = line::printed(super::charge::checked_celsius(temperature)?);
     let Datum { value: rows, citation } = data(chemistry).cold_capacity;
     let Some(first) = rows.first() else {
         return Err(Error::NotTabulated {
@@ -383,7 +383,7 @@ pub fn is_within(
     limits_degC: Datum<(f64, f64)>,
     temperature: ThermodynamicTemperature,
 ) -> Result<bool, Error> {
-    let celsius = temperature.get::<degree_celsius>();
+    let celsius = line::printed(temperature.get::<degree_celsius>());
     if !celsius.is_finite() {
         return Err(Error::OutOfRange {
             name: "cell temperature",

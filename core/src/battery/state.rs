@@ -68,6 +68,8 @@ pub struct RestTable {
     pub voltage_V: Datum<&'static [(f64, f64)]>,
     /// By how much sources or makers differ from it, V a cell.
     pub spread_V: Datum<f64>,
+    /// States of charge between which the curve is too flat to tell anything, if it has such a plateau.
+    pub plateau: Option<(f64, f64)>,
     /// Relative density of the electrolyte at about 25 °C, (state of charge, density), emptiest first; `None` where the
     /// electrolyte takes no part in the reaction or is no liquid of that kind.
     pub density: Option<Datum<&'static [(f64, f64)]>>,
@@ -86,36 +88,43 @@ const FLOODED_REST: RestTable = RestTable {
         0.015,
         Citation::new("vehicle magazine, technical answers", "rest voltage bands", Seen::Page),
     ),
+    plateau: None,
     density: Some(of(&FLOODED_DENSITY, COUNCIL)),
     rest_h: of(6.0, REST),
 };
 const AGM_REST: RestTable = RestTable {
     voltage_V: of(&AGM, SEALED),
     spread_V: of(0.02, SEALED),
+    plateau: None,
     density: Some(of(&AGM_DENSITY, STRONGER)),
     rest_h: of(6.0, REST),
 };
 const GEL_REST: RestTable = RestTable {
     voltage_V: of(&GEL, SEALED),
     spread_V: of(0.02, SEALED),
+    plateau: None,
     density: Some(of(&GEL_DENSITY, STRONGER)),
     rest_h: of(6.0, REST),
 };
 const LFP_REST: RestTable = RestTable {
     voltage_V: of(&LFP, CURVES),
     spread_V: of(0.02, CURVES),
+    // 0.07 V in all.
+    plateau: Some((0.3, 0.9)),
     density: None,
     rest_h: of(2.0, REST),
 };
 const NMC_REST: RestTable = RestTable {
     voltage_V: of(&NMC, CURVES),
     spread_V: of(0.02, CURVES),
+    plateau: None,
     density: None,
     rest_h: of(2.0, REST),
 };
 const NICKEL_REST: RestTable = RestTable {
     voltage_V: of(&NICKEL, CURVES),
     spread_V: of(0.03, CURVES),
+    plateau: Some((0.2, 0.9)),
     density: None,
     rest_h: of(12.0, REST),
 };
@@ -158,6 +167,8 @@ pub struct ChargeRange {
     pub least: StateOfCharge,
     /// Greatest.
     pub greatest: StateOfCharge,
+    /// Whether any of them lies on the curve's plateau, [`RestTable::plateau`].
+    pub on_plateau: bool,
     /// Source of the curve.
     pub citation: Citation,
 }
@@ -166,11 +177,11 @@ impl ChargeRange {
     /// Width beyond which a reading tells too little to act on.
     const USABLE: f64 = 0.3;
 
-    /// The middle, where the reading is a usable gauge: where it leaves no more than 30 % of the capacity open. Common
-    /// practice, no source.
+    /// The middle, where the reading is a usable gauge: off the plateau, and where it leaves no more than 30 % of the capacity
+    /// open. Common practice, no source.
     pub fn estimate(&self) -> Option<StateOfCharge> {
         let (least, greatest) = (self.least.get(), self.greatest.get());
-        if greatest - least > Self::USABLE {
+        if self.on_plateau || greatest - least > Self::USABLE {
             return None;
         }
         StateOfCharge::new(0.5 * (least + greatest)).ok()
@@ -237,9 +248,12 @@ pub fn state_of_charge(
             "that is far below an empty battery at rest: a cell has failed, or the number of cells is another",
         );
     }
+    let least = StateOfCharge::new(line::reached(rows, cell - open))?;
+    let greatest = StateOfCharge::new(line::reached(rows, cell + open))?;
     Ok(ChargeRange {
-        least: StateOfCharge::new(line::reached(rows, cell - open))?,
-        greatest: StateOfCharge::new(line::reached(rows, cell + open))?,
+        least,
+        greatest,
+        on_plateau: table.plateau.is_some_and(|(from, to)| greatest.get() > from && least.get() < to),
         citation: table.voltage_V.citation,
     })
 }
