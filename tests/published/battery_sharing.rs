@@ -67,9 +67,9 @@ fn nodal(
         for row in 0..2 * n {
             if row != column {
                 let factor = matrix[row][column] / matrix[column][column];
-                for k in column..=2 * n {
-                    let above = matrix[column][k];
-                    matrix[row][k] -= factor * above;
+                let above = matrix[column].clone();
+                for (cell, above) in matrix[row].iter_mut().zip(above) {
+                    *cell -= factor * above;
                 }
             }
         }

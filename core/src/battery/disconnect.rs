@@ -6,7 +6,7 @@ use uom::si::temperature_interval::kelvin;
 
 use super::charge::checked_celsius;
 use super::cold::{FREEZING_MARGIN_K, freezing_floor};
-use super::data::resistance_factor_at;
+use super::factors::resistance_factor_at;
 use super::set_points::checked_cells;
 use super::{Chemistry, DischargeFloor, cell_voltages, data, line, rest_table};
 use crate::catalogue::calculations;

@@ -442,13 +442,13 @@ mod tests {
                 close(absorption_voltage(chemistry, twelve, at(celsius)).unwrap(), points.absorption.usual());
                 match points.float {
                     Some(float) => {
-                        close(float_voltage(chemistry, twelve, at(celsius)).unwrap(), float.usual())
+                        close(float_voltage(chemistry, twelve, at(celsius)).unwrap(), float.usual());
                     }
                     None => assert!(float_voltage(chemistry, twelve, at(celsius)).is_err()),
                 }
                 match points.equalise {
                     Some(range) => {
-                        close(equalising_voltage(chemistry, twelve, at(celsius)).unwrap(), range.usual())
+                        close(equalising_voltage(chemistry, twelve, at(celsius)).unwrap(), range.usual());
                     }
                     None => assert!(equalising_voltage(chemistry, twelve, at(celsius)).is_err()),
                 }
