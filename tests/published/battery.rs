@@ -1,7 +1,7 @@
 //! Banks against `tests/reference/battery.toml`: every table and case, both ways where a table is held.
 //!
-//! Not covered: nickel-cadmium, NMC, freezing points, gassing currents and disconnect voltages, which stand in no table here
-//! (recalled or common practice, and so marked in the library).
+//! Not covered: nickel-cadmium, NMC, freezing points, gassing currents and disconnect voltages, which stand in no
+//! table here (recalled or common practice, and so marked in the library).
 
 use std::collections::BTreeSet;
 
@@ -130,11 +130,11 @@ fn between_rows_the_factor_follows_a_straight_line_and_beyond_the_ends_there_is_
     }
 }
 
-/// Source: an off-grid worksheet, widely reprinted, page seen. Tolerance 0.001: both print two decimals, and its Celsius column
-/// is rounded.
+/// Source: an off-grid worksheet, widely reprinted, page seen. Tolerance 0.001: both print two decimals, and its
+/// Celsius column is rounded.
 ///
-/// DIFFERENCE: at 80 °F the worksheet takes 1.00 where the standard's table has 0.98 (we take no credit either); at 30 °F 1.40
-/// where the standard has 1.43; at 20 °F it goes on to 1.59 where the standard holds nothing: we refuse.
+/// DIFFERENCE: at 80 °F the worksheet takes 1.00 where the standard's table has 0.98 (we take no credit either); at
+/// 30 °F 1.40 where the standard has 1.43; at 20 °F it goes on to 1.59 where the standard holds nothing: we refuse.
 #[test]
 fn the_worksheet_agrees_where_the_standard_has_rows() {
     for row in table("battery-temperature-multiplier-worksheet").rows() {
@@ -151,7 +151,8 @@ fn the_worksheet_agrees_where_the_standard_has_rows() {
     }
 }
 
-/// Source: as each row names. Ours lies within what makers and handbooks give, at its steep end: colder is charged higher.
+/// Source: as each row names. Ours lies within what makers and handbooks give, at its steep end: colder is charged
+/// higher.
 #[test]
 fn compensation_lies_within_the_published_range() {
     let rows = table("lead-acid-charge-voltage-temperature-coefficient");
@@ -221,8 +222,8 @@ fn charge_voltages_of_lead_acid_cell_by_cell() {
     }
 }
 
-/// Source: a battery council's table, widely reprinted, page seen. Exact; six cells within 0.006 V: the column of cells is the
-/// other divided by six and rounded to a millivolt.
+/// Source: a battery council's table, widely reprinted, page seen. Exact; six cells within 0.006 V: the column of
+/// cells is the other divided by six and rounded to a millivolt.
 #[test]
 fn rest_voltage_and_density_of_flooded_cells() {
     let printed = table("lead-acid-ocv-soc-flooded");
@@ -247,8 +248,9 @@ fn rest_voltage_and_density_of_flooded_cells() {
     }
 }
 
-/// Source: a vehicle magazine's answers, page seen: another table of the same. Our answer to its voltages must not leave out its
-/// charge. DIFFERENCE: its densities lie up to 0.015 above those of the council at and below three quarters.
+/// Source: a vehicle magazine's answers, page seen: another table of the same. Our answer to its voltages must not
+/// leave out its charge. DIFFERENCE: its densities lie up to 0.015 above those of the council at and below three
+/// quarters.
 #[test]
 fn another_table_of_rest_voltages_lies_within_the_spread() {
     for row in table("lead-acid-ocv-soc-magazine").rows() {
@@ -282,7 +284,8 @@ fn rest_voltage_of_lfp() {
     }
 }
 
-/// Source: ASTM E1049-85, 5.4.4, Fig. 6, page seen. Exact: the cycles in the order of counting, and their sums by range.
+/// Source: ASTM E1049-85, 5.4.4, Fig. 6, page seen. Exact: the cycles in the order of counting, and their sums by
+/// range.
 #[test]
 fn rainflow_counts_of_the_standard_history() {
     let history = [-2.0, 1.0, -3.0, 5.0, -1.0, 3.0, -4.0, 4.0, -2.0];
@@ -309,7 +312,8 @@ fn rainflow_counts_of_the_standard_history() {
     assert_eq!(again, found);
 }
 
-/// Source: a public article on Peukert's law, page seen: t = C/I^k, the form of one ampere. Tolerance 0.05: printed to a tenth.
+/// Source: a public article on Peukert's law, page seen: t = C/I^k, the form of one ampere. Tolerance 0.05: printed
+/// to a tenth.
 #[test]
 fn peukert_in_the_form_of_one_ampere() {
     let case = case("peukert-one-ampere-form");
@@ -378,8 +382,8 @@ fn lifetime(model: &Kinetic, pattern: &[(f64, f64)]) -> f64 {
     unreachable!("a pattern without end")
 }
 
-/// Source: Jongerden and others, DSN 2009, recalled. Published figures within 0.006 min (printed to 0.01, one of them cut), the
-/// recomputed ones within 0.0006 (printed to 0.001).
+/// Source: Jongerden and others, DSN 2009, recalled. Published figures within 0.006 min (printed to 0.01, one of them
+/// cut), the recomputed ones within 0.0006 (printed to 0.001).
 #[test]
 fn kinetic_lifetimes_of_two_small_batteries() {
     let model = |ampere_minutes: f64| {
@@ -415,7 +419,8 @@ fn kinetic_lifetimes_of_two_small_batteries() {
     }
 }
 
-/// Source: Jongerden and Haverkort, IET Software 3 (2009) 445, recalled. ±1 min. k there couples the wells: k′ = k/(c(1 − c)).
+/// Source: Jongerden and Haverkort, IET Software 3 (2009) 445, recalled. ±1 min. k there couples the wells: k′ =
+/// k/(c(1 − c)).
 #[test]
 fn kinetic_lifetime_at_a_constant_current() {
     let case = case("kibam-constant-0.96A");
@@ -431,8 +436,8 @@ fn kinetic_lifetime_at_a_constant_current() {
     assert!((life(rate(k)) - 81.2).abs() < 0.06);
 }
 
-/// Source: Manwell and McGowan, Solar Energy 50 (1993) 399, evaluated apart. Tolerance 5e-6: printed to five decimals, and to four
-/// in the first row.
+/// Source: Manwell and McGowan, Solar Energy 50 (1993) 399, evaluated apart. Tolerance 5e-6: printed to five
+/// decimals, and to four in the first row.
 #[test]
 fn kinetic_trajectory_under_a_stepped_current() {
     let model = Kinetic::new(ah(300.0), part(0.3), ChargeRate::per_hour(1.2).unwrap()).unwrap();

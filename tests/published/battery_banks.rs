@@ -54,7 +54,8 @@ fn need(case: &Case, degC: f64) -> LeadAcidNeed {
     }
 }
 
-/// Source: a public article, simplified IEEE method, page seen. ±0.1. The factor is ours from the temperature, not the case's.
+/// Source: a public article, simplified IEEE method, page seen. ±0.1. The factor is ours from the temperature, not
+/// the case's.
 #[test]
 fn a_bank_at_40_fahrenheit() {
     let case = case("battery-simple-ieee-40F");

@@ -109,8 +109,8 @@ fn agree(a: &(Vec<f64>, f64), b: &(Vec<f64>, f64)) -> bool {
         && (a.1 - b.1).abs() < 1e-9
 }
 
-/// Source: rule R15 of the design: 37.5, 12.5, 12.5, 37.5 A of 100 A. It holds where each string has the resistance of one link,
-/// 1 mΩ; by hand, outer = 25 A·(r + 2l)/(r + l). A stiffer link or a softer string shares better.
+/// Source: rule R15 of the design: 37.5, 12.5, 12.5, 37.5 A of 100 A. It holds where each string has the resistance
+/// of one link, 1 mΩ; by hand, outer = 25 A·(r + 2l)/(r + l). A stiffer link or a softer string shares better.
 #[test]
 fn four_strings_on_a_diagonal_share_as_the_design_says() {
     let (strings, links) = ([string(25.6, 1.0); 4], [link(1.0, 1.0); 3]);
@@ -124,8 +124,8 @@ fn four_strings_on_a_diagonal_share_as_the_design_says() {
     assert!((stiff[0] - 25.0 * 2.5 / 1.5).abs() < 1e-9 && stiff[1] < 9.0);
 }
 
-/// Source: Kirchhoff's laws. Both cables at one end: currents fall from string to string, by whole numbers where string and loop
-/// of a link are alike (5, 2, 1 of 8: each sees what lies behind it).
+/// Source: Kirchhoff's laws. Both cables at one end: currents fall from string to string, by whole numbers where
+/// string and loop of a link are alike (5, 2, 1 of 8: each sees what lies behind it).
 #[test]
 fn three_strings_from_one_end_fall_like_a_ladder() {
     let (shares, _) = ours(&[string(12.0, 2.0); 3], &[link(1.0, 1.0); 2], TakeOff::OneEnd, 8.0);

@@ -1,7 +1,8 @@
 //! The capacity of a lead-acid bank for a stand-alone system, step by step as IEEE Std 1013 goes.
 //!
-//! The procedure is recalled; the page with its worked annex was not seen, and nothing here stands in for it. The numbers are our
-//! own, an invented repeater station; each step is worked by hand beside the call, in whole numbers where that goes.
+//! The procedure is recalled; the page with its worked annex was not seen, and nothing here stands in for it. The
+//! numbers are our own, an invented repeater station; each step is worked by hand beside the call, in whole numbers
+//! where that goes.
 
 use ampwright::battery::{
     CapacityGoverned, Chemistry, LeadAcidNeed, LoadClass, Unit, autonomy_days, bank_capacity_autonomy,
@@ -67,9 +68,9 @@ fn step_2_days_of_autonomy() -> Result<(), Error> {
     Ok(())
 }
 
-/// Source: IEEE Std 485 and 1013, recalled: as many cells as the greatest voltage admits, as few volts each as the least leaves.
-/// Equipment of 21 to 31 V; flooded cells, equalised at 2.585 V at 25 °C: 31/2.585 = 11.99, so 11; a charger that keeps to 2.5 V
-/// admits 12, and leaves each 1.75 V.
+/// Source: IEEE Std 485 and 1013, recalled: as many cells as the greatest voltage admits, as few volts each as the
+/// least leaves. Equipment of 21 to 31 V; flooded cells, equalised at 2.585 V at 25 °C: 31/2.585 = 11.99, so 11; a
+/// charger that keeps to 2.5 V admits 12, and leaves each 1.75 V.
 #[test]
 fn step_3_number_of_cells_and_end_voltage() -> Result<(), Error> {
     let usual = set_points(Chemistry::Flooded, 1, parse("25 degC")?)?.equalise.unwrap().usual();
@@ -120,8 +121,8 @@ fn step_5_depth_day_and_end_of_life() -> Result<(), Error> {
     Ok(())
 }
 
-/// Source: IEEE Std 485, Table 1, row of −1.1 °C (recalled): 1.43. 735 · 1.43 = 1051.05 Ah. Between −1.1 and 1.7 °C the straight
-/// line: at 0.3 °C 1.39. Below −3.9 °C the table holds nothing, and the maker's figure is asked for.
+/// Source: IEEE Std 485, Table 1, row of −1.1 °C (recalled): 1.43. 735 · 1.43 = 1051.05 Ah. Between −1.1 and 1.7 °C
+/// the straight line: at 0.3 °C 1.39. Below −3.9 °C the table holds nothing, and the maker's figure is asked for.
 #[test]
 fn step_6_lowest_temperature() -> Result<(), Error> {
     let steps = lead_acid_capacity(&station()?)?;
@@ -146,8 +147,8 @@ fn step_7_design_margin() -> Result<(), Error> {
     Ok(())
 }
 
-/// Source: IEEE Std 1013: the hour rate at which the rating is read. 1156.155 Ah / 10.5 A = 110.11 h: a rating at 100 h, the next
-/// shorter of the usual ones, holds.
+/// Source: IEEE Std 1013: the hour rate at which the rating is read. 1156.155 Ah / 10.5 A = 110.11 h: a rating at 100
+/// h, the next shorter of the usual ones, holds.
 #[test]
 fn step_8_functional_hour_rate() -> Result<(), Error> {
     let need = station()?;
@@ -161,8 +162,9 @@ fn step_8_functional_hour_rate() -> Result<(), Error> {
     Ok(())
 }
 
-/// Source: IEEE Std 1013: cells are chosen whose capacity at that rate is enough, in one string or a few. Invented cells of 2 V,
-/// 500 Ah at 10 h, by Peukert's law with 1.2: 500·10^(1/6) = 733.9 Ah at 100 h, so two strings of twelve.
+/// Source: IEEE Std 1013: cells are chosen whose capacity at that rate is enough, in one string or a few. Invented
+/// cells of 2 V, 500 Ah at 10 h, by Peukert's law with 1.2: 500·10^(1/6) = 733.9 Ah at 100 h, so two strings of
+/// twelve.
 #[test]
 fn step_9_cells_and_strings() -> Result<(), Error> {
     let steps = lead_acid_capacity(&station()?)?;

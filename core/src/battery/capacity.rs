@@ -101,16 +101,16 @@ pub struct LeadAcidSteps {
     pub margin_factor: Ratio,
     /// Capacity that the bank must have, at the functional-hour rate.
     pub capacity: ElectricCharge,
-    /// Hours in which the greatest current would take that capacity: the maker's rating at this rate, or at a shorter time,
-    /// is the one that counts. `None` where the greatest current is nought.
+    /// Hours in which the greatest current would take that capacity: the maker's rating at this rate, or at a shorter
+    /// time, is the one that counts. `None` where the greatest current is nought.
     pub functional_time: Option<Time>,
 }
 
 /// Capacity of a lead-acid or nickel-cadmium bank, step by step (R12).
 ///
 /// # Errors
-/// [`Error::OutOfRange`] where an input is NaN, infinite or outside its range; [`Error::TableEnds`] where no temperature factor
-/// is held and none is stated; [`Error::NotTabulated`] for lithium.
+/// [`Error::OutOfRange`] where an input is NaN, infinite or outside its range; [`Error::TableEnds`] where no
+/// temperature factor is held and none is stated; [`Error::NotTabulated`] for lithium.
 ///
 /// # Source
 /// IEEE Std 1013, the procedure recalled; its temperature factors as [`capacity_factor`].
@@ -414,7 +414,8 @@ mod tests {
             depth in 0.1..1.0f64, daily in 0.05..1.0f64, life in 0.3..1.0f64, celsius in -3.9..50.0f64,
             margin in 0.0..0.5f64,
         ) {
-            let need = LeadAcidNeed { end_of_life: r(life), margin: r(margin), ..lead_acid(Chemistry::Flooded, depth, daily, celsius) };
+            let base = lead_acid(Chemistry::Flooded, depth, daily, celsius);
+            let need = LeadAcidNeed { end_of_life: r(life), margin: r(margin), ..base };
             let steps = lead_acid_capacity(&need).unwrap();
             // Backwards: what is left of it without margin, in the cold.
             let left = steps.capacity.get::<ampere_hour>() / (1.0 + margin) / steps.temperature_factor.value.value;
@@ -446,7 +447,9 @@ mod tests {
                 };
                 let base = lead_acid(chemistry, 0.5, 0.2, 10.0);
                 let one_odd = LeadAcidNeed { daily_demand: ah(a), ..base };
-                for need in [need, one_odd, LeadAcidNeed { margin: r(i), ..base }, LeadAcidNeed { lowest_temperature: at(f), ..base }] {
+                let margin = LeadAcidNeed { margin: r(i), ..base };
+                let temperature = LeadAcidNeed { lowest_temperature: at(f), ..base };
+                for need in [need, one_odd, margin, temperature] {
                     if let Ok(steps) = lead_acid_capacity(&need) {
                         prop_assert!(steps.capacity.value.is_finite() && steps.capacity.value > 0.0);
                     }

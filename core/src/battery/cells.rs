@@ -15,8 +15,9 @@ const LABEL_V: f64 = 0.05;
 
 /// Number of cells in series behind a nominal voltage.
 ///
-/// Lead-acid counts 2 V a cell, nickel-cadmium 1.2 V, NMC 3.6 to 3.7 V, and the fewer cells where both would do. LFP counts 3.2 V, and the labels of the lead-acid
-/// bank that it replaces, 6 and the multiples of 12 V, count 4 cells for 12 V: 24 V are 8 cells, 48 V are 16 and not 15.
+/// Lead-acid counts 2 V a cell, nickel-cadmium 1.2 V, NMC 3.6 to 3.7 V, and the fewer cells where both would do. LFP
+/// counts 3.2 V, and the labels of the lead-acid bank that it replaces, 6 and the multiples of 12 V, count 4 cells
+/// for 12 V: 24 V are 8 cells, 48 V are 16 and not 15.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] unless the voltage lies above 0 and up to 1500 V; [`Error::Contradiction`] where no whole
@@ -116,7 +117,8 @@ calculations! {
         /// Of each cell at the least voltage.
         end_voltage: ElectricPotential in volt,
     }
-    where (charge_voltage <= greatest_voltage) charge_voltage in volt: "a single cell is charged above the greatest voltage"
+    where (charge_voltage <= greatest_voltage) charge_voltage in volt: "a single cell is charged above the greatest \
+        voltage"
     where (least_voltage < greatest_voltage) least_voltage in volt: "it must be below the greatest voltage"
     formula "n = U_max/U_charge, rounded down to the whole; U_end = U_min/n"
     source "IEEE Std 485 and 1013, number of cells, recalled"

@@ -196,10 +196,12 @@ calculations! {
         /// Part of the capacity that is left.
         state_of_charge: Ratio in ratio [0.0 ..= 1.0],
     ) -> temperature: ThermodynamicTemperature in degree_celsius
-    formula "by the straight line between rows, first the density of the charge (flooded 1.12, 1.155, 1.19, 1.225, 1.265 at 0, 25, 50, 75, 100 %; AGM 1.1 \
-        to 1.3; gel 1.1 to 1.28), then its freezing point: 1 0 °C, 1.05 −3.3, 1.1 −7.7, 1.15 −15, 1.2 −26.7, 1.225 −37.2, 1.25 −52.2, 1.28 \
-        −69 °C; nickel-cadmium about −25 °C at any charge"
-    source "freezing points of sulphuric acid by density, storage battery handbooks, recalled; potassium hydroxide recalled"
+    formula "by the straight line between rows, first the density of the charge (flooded 1.12, 1.155, 1.19, 1.225, \
+        1.265 at 0, 25, 50, 75, 100 %; AGM 1.1 to 1.3; gel 1.1 to 1.28), then its freezing point: 1 0 °C, 1.05 −3.3, \
+        1.1 −7.7, 1.15 −15, 1.2 −26.7, 1.225 −37.2, 1.25 −52.2, 1.28 −69 °C; nickel-cadmium about −25 °C at any \
+        charge"
+    source "freezing points of sulphuric acid by density, storage battery handbooks, recalled; potassium hydroxide \
+        recalled"
     fallible "the battery holds no water: lithium"
     {
         freezing_degC(chemistry, state_of_charge.value)
@@ -232,6 +234,7 @@ calculations! {
 
 #[cfg(test)]
 mod tests {
+    extern crate std;
     use super::*;
     use proptest::prelude::*;
 
@@ -295,6 +298,19 @@ mod tests {
                 let _ = freezing_floor(chemistry, at(a), k(b));
                 let _ = freezes(chemistry, soc(0.5), at(a), k(c));
             }
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn the_formula_names_the_figures_of_the_tables() {
+        let formula = ENTRIES.iter().find(|e| e.name == "freezing_point").unwrap().formula;
+        for (density, below) in ACID {
+            let sign = if below > 0.0 { "−" } else { "" };
+            assert!(formula.contains(&std::format!("{density} {sign}{below}")), "{density}");
+        }
+        for rows in Chemistry::ALL.iter().filter_map(|c| rest_table(*c).density) {
+            assert!(rows.value.iter().all(|(_, density)| formula.contains(&std::format!("{density}"))));
         }
     }
 }

@@ -22,8 +22,8 @@ pub struct ColdSpell {
     pub start: StateOfCharge,
     /// Temperature of the cells throughout.
     pub temperature: ThermodynamicTemperature,
-    /// Part of the capacity that the maker states there; else, for lead-acid, one over its temperature factor, for the others
-    /// [`cold_fraction`].
+    /// Part of the capacity that the maker states there; else, for lead-acid, one over its temperature factor, for
+    /// the others [`cold_fraction`].
     pub stated_fraction: Option<Ratio>,
     /// Charge that the loads take in a day.
     pub daily_demand: ElectricCharge,
@@ -60,8 +60,9 @@ pub struct ColdSpellOutcome {
 /// How long loads run on a bank while the cold blocks its charge, and what ends it (R13).
 ///
 /// # Errors
-/// [`Error::OutOfRange`] where a quantity is NaN, infinite or not above nought; [`Error::TableEnds`] where even a full
-/// battery does not keep the margin from freezing, or where no capacity is held for that temperature and none is stated.
+/// [`Error::OutOfRange`] where a quantity is NaN, infinite or not above nought; [`Error::TableEnds`] where even a
+/// full battery does not keep the margin from freezing, or where no capacity is held for that temperature and none is
+/// stated.
 ///
 /// # Example
 /// A telemetry mast on AGM at −20 °C: the freezing of acid, not the depth, ends its discharge.
@@ -121,8 +122,8 @@ fn usable_part(start: f64, least: f64, fraction: f64) -> f64 {
 calculations! {
     /// Days until loads alone have brought a bank down to a state of charge, while the cold admits no charge.
     ///
-    /// The cold takes its part in two ways, of which the one that leaves less counts: in proportion, as a bank is sized, and from
-    /// the bottom, where the voltage of a cold cell has fallen before it is empty.
+    /// The cold takes its part in two ways, of which the one that leaves less counts: in proportion, as a bank is
+    /// sized, and from the bottom, where the voltage of a cold cell has fallen before it is empty.
     ///
     /// # Example
     /// 200 Ah of LFP from 90 to 10 %, of which the cold leaves 70 %, with 16 Ah a day:

@@ -53,9 +53,9 @@ pub struct Disconnect {
 
 /// Disconnect and reconnect voltages of a bank, fit for chemistry, current and freezing (R14).
 ///
-/// The loads are dropped at the greatest depth of discharge of the chemistry, or earlier where the electrolyte would come
-/// within [`FREEZING_MARGIN_K`] of freezing. The voltage is that of the charge at rest, less its fall under the load, but
-/// never below the least that a cell bears ([`cell_voltages`]).
+/// The loads are dropped at the greatest depth of discharge of the chemistry, or earlier where the electrolyte would
+/// come within [`FREEZING_MARGIN_K`] of freezing. The voltage is that of the charge at rest, less its fall under the
+/// load, but never below the least that a cell bears ([`cell_voltages`]).
 ///
 /// | input | unit | valid |
 /// | --- | --- | --- |
@@ -64,8 +64,8 @@ pub struct Disconnect {
 /// | `temperature` | °C | −60 … 100; lowest of the cells |
 ///
 /// # Errors
-/// [`Error::OutOfRange`] if the temperature is NaN or out of range, or there are no cells; [`Error::TableEnds`] where even
-/// a full battery does not keep the margin from freezing.
+/// [`Error::OutOfRange`] if the temperature is NaN or out of range, or there are no cells; [`Error::TableEnds`] where
+/// even a full battery does not keep the margin from freezing.
 ///
 /// # Source
 /// Rest voltages as [`rest_table`]; the fall under load and the reconnect voltages are common practice, no source.
@@ -113,8 +113,8 @@ pub fn disconnect(
 calculations! {
     /// Voltages at which the loads of a bank are dropped and taken back.
     ///
-    /// See [`disconnect`] for what they rest on. A setting in a device counts at its own terminals: take the drop of the cable
-    /// between off.
+    /// See [`disconnect`] for what they rest on. A setting in a device counts at its own terminals: take the drop of
+    /// the cable between off.
     ///
     /// # Example
     /// ```
@@ -141,10 +141,11 @@ calculations! {
         /// State of charge at which they are dropped.
         state_of_charge: Ratio in ratio,
     }
-    formula "disconnect = n·max(U₀(s) − r·k·(1 + (a − 1)(1 − s))·b^((25 °C − t)/35 K), least of a cell); s the greater of one less the greatest \
-        depth (lead-acid 0.8, others 0.9) and the least that keeps 5 K from freezing; k in V·h: flooded 0.4, AGM 0.25, gel 0.3, LFP 0.12, NMC \
-        0.15, nickel-cadmium 0.2; a and b the rise of resistance discharged and cold; reconnect = n·max(2.1, 2.12, 2.12, 3.32, 3.75, 1.32 V; \
-        U₀(s) + 2.5 % of nominal)"
+    formula "disconnect = n·max(U₀(s) − r·k·(1 + (a − 1)(1 − s))·b^((25 °C − t)/35 K), least of a cell); s the \
+        greater of one less the greatest depth (lead-acid 0.8, others 0.9) and the least that keeps 5 K from \
+        freezing; k in V·h: flooded 0.4, AGM 0.25, gel 0.3, LFP 0.12, NMC 0.15, nickel-cadmium 0.2; a and b the rise \
+        of resistance discharged and cold; reconnect = n·max(2.1, 2.12, 2.12, 3.32, 3.75, 1.32 V; U₀(s) + 2.5 % of \
+        nominal)"
     source "rest voltages by table; fall under load and reconnect voltages are common practice, no source"
     fallible "even a full battery comes within 5 K of freezing"
     {
@@ -160,6 +161,7 @@ calculations! {
 
 #[cfg(test)]
 mod tests {
+    extern crate std;
     use super::*;
     use proptest::prelude::*;
     use uom::si::thermodynamic_temperature::degree_celsius;
@@ -217,5 +219,18 @@ mod tests {
             assert_eq!((entry.disconnect, entry.reconnect), (whole.disconnect, whole.reconnect));
             assert_eq!(entry.state_of_charge.value, whole.floor.get());
         }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn the_formula_names_the_figures_of_the_tables() {
+        for chemistry in Chemistry::ALL {
+            for figure in
+                [data(chemistry).drop_V_h.value, reconnect_V(chemistry), data(chemistry).greatest_depth.value]
+            {
+                assert!(ENTRIES[0].formula.contains(&std::format!("{figure}")), "{chemistry}: {figure}");
+            }
+        }
+        assert!(ENTRIES[0].formula.contains(&std::format!("{FREEZING_MARGIN_K} K")));
     }
 }

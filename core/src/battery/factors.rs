@@ -10,7 +10,8 @@ use crate::quantity::{Ratio, StateOfCharge, ThermodynamicTemperature};
 
 /// Part of the capacity at 25 °C that a lithium or nickel-cadmium battery gives at a temperature.
 ///
-/// By the straight line between the rows of [`ChemistryData::cold_capacity`]; above 25 °C no more than the whole.
+/// By the straight line between the rows of [`ChemistryData::cold_capacity`](super::ChemistryData::cold_capacity);
+/// above 25 °C no more than the whole.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] for NaN; [`Error::TableEnds`] below the coldest row, where no discharge is admitted either;
@@ -84,7 +85,8 @@ pub(super) fn resistance_factor_at(chemistry: Chemistry, charge: f64, celsius: f
 
 /// Years until a battery is worn out by age alone at a mean temperature.
 ///
-/// [`ChemistryData::life_years`], halved with every [`ChemistryData::life_halving_K`] above 25 °C; below, no longer.
+/// [`ChemistryData::life_years`](super::ChemistryData::life_years), halved with every
+/// [`ChemistryData::life_halving_K`](super::ChemistryData::life_halving_K) above 25 °C; below, no longer.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] if the temperature is NaN or outside −60 … 100 °C.
@@ -103,7 +105,7 @@ pub fn life_years(chemistry: Chemistry, temperature: ThermodynamicTemperature) -
     Ok(data.life_years.value * libm::pow(0.5, above / data.life_halving_K.value))
 }
 
-/// Whether a temperature lies within a pair of limits of [`ChemistryData`], both included.
+/// Whether a temperature lies within a pair of limits of [`ChemistryData`](super::ChemistryData), both included.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] if the temperature is NaN or infinite.

@@ -1,7 +1,7 @@
 //! The kinetic battery model: two wells of charge, of which only one can be drawn from at once.
 //!
-//! What is bound flows over at a rate of its own: a fast discharge empties the available well while charge is left, and a
-//! rest brings some back. Losses, temperature and age are not in it.
+//! What is bound flows over at a rate of its own: a fast discharge empties the available well while charge is left,
+//! and a rest brings some back. Losses, temperature and age are not in it.
 
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
@@ -46,8 +46,8 @@ impl Kinetic {
     /// k′ is that of the step equations, k/(c(1 − c)) where k couples the heights of the wells.
     ///
     /// # Errors
-    /// [`Error::OutOfRange`] unless the capacity is above nought and finite, the part above 0 and below 1, and the rate above
-    /// nought.
+    /// [`Error::OutOfRange`] unless the capacity is above nought and finite, the part above 0 and below 1, and the
+    /// rate above nought.
     pub fn new(capacity: ElectricCharge, available: Ratio, rate: ChargeRate) -> Result<Self, Error> {
         let (capacity_Ah, c, k) = (capacity.get::<ampere_hour>(), available.get::<ratio>(), rate.get());
         let refuse = |name, value, unit, allowed| Err(Error::OutOfRange { name, value, unit, allowed });
@@ -120,8 +120,8 @@ impl Kinetic {
 
     /// The wells after a constant current, positive in discharge, over a time.
     ///
-    /// The closed form of the model, exact for any length of step. The available well may come out below nought or above
-    /// its brim: [`Kinetic::max_discharge`] and [`Kinetic::max_charge`] tell what keeps it within.
+    /// The closed form of the model, exact for any length of step. The available well may come out below nought or
+    /// above its brim: [`Kinetic::max_discharge`] and [`Kinetic::max_charge`] tell what keeps it within.
     ///
     /// # Errors
     /// [`Error::OutOfRange`] where an input is NaN or infinite or the time negative.

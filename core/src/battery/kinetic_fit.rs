@@ -45,23 +45,26 @@ impl Pair {
 impl Kinetic {
     /// The battery whose capacities at three hour rates are these, the longest time first.
     ///
-    /// The rate constant is looked for between 0.01 over the longest and 20 over the shortest time: beyond, the ratings tell
-    /// nothing about it. There is no more than one.
+    /// The rate constant is looked for between 0.01 over the longest and 20 over the shortest time: beyond, the
+    /// ratings tell nothing about it. There is no more than one.
     ///
     /// # Errors
-    /// [`Error::OutOfRange`] where a rating is not above nought and finite; [`Error::Contradiction`] where times or capacities do
-    /// not fall from one to the next, or no two wells have these capacities.
+    /// [`Error::OutOfRange`] where a rating is not above nought and finite; [`Error::Contradiction`] where times or
+    /// capacities do not fall from one to the next, or no two wells have these capacities.
     ///
     /// # Source
-    /// Manwell and McGowan (1993), recalled: the available part follows from two of the ratings for each rate constant; the third
-    /// decides which.
+    /// Manwell and McGowan (1993), recalled: the available part follows from two of the ratings for each rate
+    /// constant; the third decides which.
     ///
     /// # Example
     /// ```
     /// use ampwright::battery::{HourRate, Kinetic};
     /// use ampwright::quantity::parse;
-    /// let rating = |capacity, duration| Ok::<_, ampwright::Error>(HourRate { capacity: parse(capacity)?, duration: parse(duration)? });
-    /// let model = Kinetic::fitted(&[rating("273.3 Ah", "20 h")?, rating("216.1 Ah", "5 h")?, rating("127.2 Ah", "1 h")?])?;
+    /// let model = Kinetic::fitted(&[
+    ///     HourRate { capacity: parse("273.3 Ah")?, duration: parse("20 h")? },
+    ///     HourRate { capacity: parse("216.1 Ah")?, duration: parse("5 h")? },
+    ///     HourRate { capacity: parse("127.2 Ah")?, duration: parse("1 h")? },
+    /// ])?;
     /// assert!((model.available().value - 0.3).abs() < 0.01);
     /// assert!((model.rate().get() - 1.2).abs() < 0.05);
     /// # Ok::<(), ampwright::Error>(())
@@ -96,8 +99,8 @@ impl Kinetic {
         Self::of_pair(outer, 0.5 * (low + high)).ok_or(no_wells(middle))?
     }
 
-    /// The battery whose capacities at two hour rates are these, the longer time first, with a rate constant that is known or
-    /// taken from [`data`](super::data).
+    /// The battery whose capacities at two hour rates are these, the longer time first, with a rate constant that is
+    /// known or taken from [`data`](super::data).
     ///
     /// # Errors
     /// As [`Kinetic::fitted`].
@@ -172,7 +175,8 @@ calculations! {
     /// # Example
     /// ```
     /// use ampwright::{battery::kinetic_available_part, quantity::{parse, readable}};
-    /// let result = kinetic_available_part(parse("273.3 Ah")?, parse("20 h")?, parse("127.2 Ah")?, parse("1 h")?, parse("1.2 /h")?)?;
+    /// let (slow, fast) = (parse("273.3 Ah")?, parse("127.2 Ah")?);
+    /// let result = kinetic_available_part(slow, parse("20 h")?, fast, parse("1 h")?, parse("1.2 /h")?)?;
     /// assert_eq!(readable(result.available).to_string(), "0.3");
     /// assert_eq!(readable(result.capacity).to_string(), "300 Ah");
     /// # Ok::<(), ampwright::Error>(())
@@ -194,7 +198,8 @@ calculations! {
         /// Of both wells: at a very slow discharge.
         capacity: ElectricCharge in ampere_hour,
     }
-    formula "c = (x₁·g₂ − R·x₂·g₁)/(R·x₂·h₁ − x₁·h₂), R = C₁/C₂, x = k′·t, g = 1 − e^−x, h = x − g; C = C₁·(g₁ + c·h₁)/(c·x₁)"
+    formula "c = (x₁·g₂ − R·x₂·g₁)/(R·x₂·h₁ − x₁·h₂), R = C₁/C₂, x = k′·t, g = 1 − e^−x, h = x − g; C = C₁·(g₁ + \
+        c·h₁)/(c·x₁)"
     source "Manwell and McGowan, Solar Energy 50 (1993) 399 (recalled), solved for c"
     fallible "the times or capacities do not fall, or no two wells have these capacities at that rate constant"
     {

@@ -47,8 +47,8 @@ impl Layout {
 ///
 /// # Errors
 /// [`Error::OutOfRange`] where a voltage or capacity is not above nought and finite, or a limit is nought;
-/// [`Error::Contradiction`] where no whole number of cells makes one of the voltages, no whole number of units makes the bank,
-/// or more units in series or in parallel would be needed than their maker admits.
+/// [`Error::Contradiction`] where no whole number of cells makes one of the voltages, no whole number of units makes
+/// the bank, or more units in series or in parallel would be needed than their maker admits.
 ///
 /// # Example
 /// ```
@@ -103,7 +103,8 @@ pub fn layout(unit: &Unit, wanted: ElectricPotential, capacity: ElectricCharge) 
 /// ```
 /// use ampwright::battery::{Chemistry, Unit, laid_out};
 /// use ampwright::quantity::{parse, readable};
-/// # let unit = Unit { chemistry: Chemistry::Flooded, nominal: parse("6 V")?, capacity: parse("225 Ah")?, max_series: 8, max_parallel: 3 };
+/// # let (nominal, capacity) = (parse("6 V")?, parse("225 Ah")?);
+/// # let unit = Unit { chemistry: Chemistry::Flooded, nominal, capacity, max_series: 8, max_parallel: 3 };
 /// let bank = laid_out(&unit, 5, 1)?;
 /// assert_eq!(readable(bank.nominal).to_string(), "30 V");
 /// assert!(bank.serves(unit.chemistry, parse("24 V")?).is_err());

@@ -181,7 +181,8 @@ fn rate_of(need: &LithiumNeed) -> Result<Datum<ChargeRate>, Error> {
 calculations! {
     /// Capacity of a lithium bank by its charge, from the demand to the margin.
     ///
-    /// The current that the bank bears is another matter: [`discharge_current_limit()`](super::discharge_current_limit()).
+    /// The current that the bank bears is another matter:
+    /// [`discharge_current_limit()`](super::discharge_current_limit()).
     ///
     /// # Example
     /// ```
@@ -250,7 +251,8 @@ mod tests {
         fn the_capacity_fulfils_what_was_asked_of_it(
             window in 0.2..1.0f64, life in 0.5..1.0f64, celsius in -20.0..40.0f64, margin in 0.0..0.5f64,
         ) {
-            let need = LithiumNeed { window: r(window), end_of_life: r(life), margin: r(margin), ..usual(Chemistry::Nmc, celsius, 1.0) };
+            let base = usual(Chemistry::Nmc, celsius, 1.0);
+            let need = LithiumNeed { window: r(window), end_of_life: r(life), margin: r(margin), ..base };
             let steps = lithium_capacity(&need).unwrap();
             // Backwards, in another order: worn, cold, within the window.
             let left = steps.capacity.get::<ampere_hour>() / (1.0 + margin) * life * steps.cold_fraction.value.value * window;

@@ -29,9 +29,10 @@ calculations! {
         fast_time: Time in hour [> 0.0],
     ) -> exponent: Ratio in ratio
     where (fast_time < slow_time) fast_time in hour: "it must be shorter than the slow time"
-    where (fast_capacity <= slow_capacity) fast_capacity in ampere_hour: "a faster discharge does not give more; exchange the two"
-    where (fast_capacity / fast_time > slow_capacity / slow_time) fast_capacity in ampere_hour: "the shorter discharge must have the \
-        greater current"
+    where (fast_capacity <= slow_capacity) fast_capacity in ampere_hour: "a faster discharge does not give more; \
+        exchange the two"
+    where (fast_capacity / fast_time > slow_capacity / slow_time) fast_capacity in ampere_hour: "the shorter \
+        discharge must have the greater current"
     formula "k = ln(t₁/t₂)/ln(I₂/I₁), I = C/t"
     source "Peukert's law, solved for its exponent; the form is given in a battery monitor's manual, recalled"
     {

@@ -126,8 +126,8 @@ const NICKEL_REST: RestTable = RestTable {
 
 /// Rest voltages and densities of a chemistry.
 ///
-/// Flooded equals `lead-acid-ocv-soc-flooded`, LFP `lfp-ocv-soc-typical` in `tests/reference/battery.toml` (tested there);
-/// the rest recalled.
+/// Flooded equals `lead-acid-ocv-soc-flooded`, LFP `lfp-ocv-soc-typical` in `tests/reference/battery.toml` (tested
+/// there); the rest recalled.
 ///
 /// ```
 /// # use ampwright::battery::{Chemistry, rest_table};

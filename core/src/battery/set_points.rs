@@ -38,8 +38,8 @@ pub struct CellSetPoints {
 const HANDBOOK: Citation = Citation::new("common handbook values", "lead-acid charge voltages", Seen::Page);
 const SHEETS: Citation = Citation::new("typical cell data sheets", "charge voltage", Seen::Recalled);
 const NICKEL: Citation = Citation::new("common handbook values", "vented nickel-cadmium", Seen::Recalled);
-/// 0.028 V per cell per 10 °F, which is 5.04 mV/K, in one maker's FAQ; 5.0 mV/K from a maker of gel batteries. Handbooks
-/// give 3 to 5 mV/K.
+/// 0.028 V per cell per 10 °F, which is 5.04 mV/K, in one maker's FAQ; 5.0 mV/K from a maker of gel batteries.
+/// Handbooks give 3 to 5 mV/K.
 const LEAD_ACID_COMPENSATION: Citation =
     Citation::new("two battery makers' figures", "5 mV/K a cell", Seen::Page);
 const UNCOMPENSATED: Citation = Citation::new("typical cell data sheets", "no compensation", Seen::Recalled);
@@ -271,8 +271,8 @@ calculations! {
         /// Of the cells, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.435 V, AGM 2.415 V, gel 2.375 V, each \
-        −5 mV/K; LFP 3.525 V, NMC 4.125 V, both 0; nickel-cadmium 1.525 V, −3 mV/K"
+    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.435 V, AGM 2.415 \
+        V, gel 2.375 V, each −5 mV/K; LFP 3.525 V, NMC 4.125 V, both 0; nickel-cadmium 1.525 V, −3 mV/K"
     source "lead-acid: the middle of usual handbook ranges, and two makers' compensation; the rest recalled"
     {
         let cell = cell_set_points(chemistry);
@@ -297,8 +297,8 @@ calculations! {
         /// Of the cells, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.235 V, AGM and gel 2.275 V, each \
-        −5 mV/K; LFP 3.35 V, 0; nickel-cadmium 1.425 V, −3 mV/K"
+    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.235 V, AGM and \
+        gel 2.275 V, each −5 mV/K; LFP 3.35 V, 0; nickel-cadmium 1.425 V, −3 mV/K"
     source "lead-acid: the middle of usual handbook ranges, and two makers' compensation; the rest recalled"
     fallible "the chemistry is not held at a float voltage: NMC"
     {
@@ -325,8 +325,8 @@ calculations! {
         /// Of the cells, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.585 V, AGM 2.475 V, gel 2.4 V (its \
-        absorption: no more), each −5 mV/K; nickel-cadmium 1.625 V, −3 mV/K"
+    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.585 V, AGM 2.475 \
+        V, gel 2.4 V (its absorption: no more), each −5 mV/K; nickel-cadmium 1.625 V, −3 mV/K"
     source "lead-acid: the middle of usual handbook ranges, and two makers' compensation; the rest recalled"
     fallible "the chemistry takes no equalisation: lithium"
     {
@@ -343,7 +343,8 @@ calculations! {
     /// 14.6 V at 80 °F for six flooded cells, of 5.04 mV/K each, are more at 70 °F:
     /// ```
     /// use ampwright::{battery::compensated_voltage, quantity::{parse, readable}};
-    /// let result = compensated_voltage(parse("14.6 V")?, parse("6")?, parse("-5.04 mV/K")?, parse("80 degF")?, parse("70 degF")?)?;
+    /// let (stated, coefficient) = (parse("14.6 V")?, parse("-5.04 mV/K")?);
+    /// let result = compensated_voltage(stated, parse("6")?, coefficient, parse("80 degF")?, parse("70 degF")?)?;
     /// assert_eq!(readable(result).to_string(), "14.77 V");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
@@ -380,6 +381,7 @@ pub const fn compensation(chemistry: Chemistry) -> VoltagePerTemperature {
 
 #[cfg(test)]
 mod tests {
+    extern crate std;
     use super::*;
     use crate::battery::{cell_voltages, fault_voltage};
 
@@ -461,6 +463,25 @@ mod tests {
         assert!(set_points(Chemistry::Agm, 0, at(25.0)).is_err());
         for odd in [f64::NAN, f64::INFINITY, -61.0, 101.0] {
             assert!(set_points(Chemistry::Agm, 6, at(odd)).is_err());
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the table.
+    #[test]
+    fn formulas_name_the_figures_of_the_table() {
+        let named = |entry: &str, volts: f64| {
+            let formula = ENTRIES.iter().find(|e| e.name == entry).unwrap().formula;
+            assert!(formula.contains(&std::format!("{} V", (1e4 * volts).round() / 1e4)), "{entry}: {volts}");
+        };
+        for chemistry in Chemistry::ALL {
+            let cell = cell_set_points(chemistry);
+            named("absorption_voltage", middle(cell.absorption_V));
+            if let Some(float) = cell.float_V {
+                named("float_voltage", middle(float));
+            }
+            if let Some(equalise) = cell.equalise_V {
+                named("equalising_voltage", middle(equalise));
+            }
         }
     }
 }

@@ -1,8 +1,8 @@
 //! How parallel strings share a current (R15).
 //!
 //! The strings stand between a positive and a negative bar; between neighbours each bar has a link, whose resistance
-//! includes its joints. The circuit is a ladder: its equations in the currents summed along it have three diagonals and are
-//! solved in place, without a heap.
+//! includes its joints. The circuit is a ladder: its equations in the currents summed along it have three diagonals
+//! and are solved in place, without a heap.
 
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
@@ -65,8 +65,8 @@ impl TakeOff {
 pub struct StringShare {
     /// Its current, positive in discharge.
     pub current: ElectricCurrent,
-    /// That over an equal share of the whole: 1 where all carry alike, negative where it is driven backwards. Nought where the
-    /// whole is nought.
+    /// That over an equal share of the whole: 1 where all carry alike, negative where it is driven backwards. Nought
+    /// where the whole is nought.
     pub part: Ratio,
 }
 
@@ -91,14 +91,14 @@ pub struct Sharing {
 
 /// Shares the current of a bank between its parallel strings.
 ///
-/// `current` is that of the whole bank, positive in discharge; nought shows what strings of different voltage drive through
-/// each other. `links` has one entry fewer than `strings`, and none for [`TakeOff::Busbar`]. `shares` takes the result, one for
-/// each string, and is written on success only in part on an error.
+/// `current` is that of the whole bank, positive in discharge; nought shows what strings of different voltage drive
+/// through each other. `links` has one entry fewer than `strings`, and none for [`TakeOff::Busbar`]. `shares` takes
+/// the result, one for each string, and is written on success only in part on an error.
 ///
 /// # Errors
-/// [`Error::WrongCount`] where the slices do not go together; [`Error::OutOfRange`] where there is no string, a resistance of a
-/// string is not above nought, one of a link is negative, or anything is NaN or infinite; [`Error::Contradiction`] where a
-/// take-off names a string that is not there.
+/// [`Error::WrongCount`] where the slices do not go together; [`Error::OutOfRange`] where there is no string, a
+/// resistance of a string is not above nought, one of a link is negative, or anything is NaN or infinite;
+/// [`Error::Contradiction`] where a take-off names a string that is not there.
 ///
 /// # Source
 /// Kirchhoff's laws; tested against a general nodal solution.

@@ -18,7 +18,7 @@ pub struct ChargeRange {
     pub least: StateOfCharge,
     /// Greatest.
     pub greatest: StateOfCharge,
-    /// Whether any of them lies on the curve's plateau, [`RestTable::plateau`].
+    /// Whether any of them lies on the curve's plateau, [`RestTable::plateau`](super::RestTable::plateau).
     pub on_plateau: bool,
     /// Source of the curve.
     pub citation: Citation,
@@ -28,8 +28,8 @@ impl ChargeRange {
     /// Width beyond which a reading tells too little to act on.
     const USABLE: f64 = 0.3;
 
-    /// The middle, where the reading is a usable gauge: off the plateau, and where it leaves no more than 30 % of the capacity
-    /// open. Common practice, no source.
+    /// The middle, where the reading is a usable gauge: off the plateau, and where it leaves no more than 30 % of the
+    /// capacity open. Common practice, no source.
     pub fn estimate(&self) -> Option<StateOfCharge> {
         let (least, greatest) = (self.least.get(), self.greatest.get());
         if self.on_plateau || greatest - least > Self::USABLE {
@@ -147,9 +147,9 @@ calculations! {
         /// Part of the capacity that is left.
         state_of_charge: Ratio in ratio [0.0 ..= 1.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·U₀(s), U₀ by the straight line between rows, at 0, 25, 50, 75 and 100 %: flooded 1.982, 2.01, 2.04, 2.075, 2.108 V; AGM 1.967, \
-        2, 2.05, 2.1, 2.133 V; gel 1.967, 2, 2.058, 2.108, 2.142 V; LFP, NMC and nickel-cadmium by rows of their own, at half charge \
-        3.29, 3.7 and 1.27 V"
+    formula "U = n·U₀(s), U₀ by the straight line between rows, at 0, 25, 50, 75 and 100 %: flooded 1.982, 2.01, \
+        2.04, 2.075, 2.108 V; AGM 1.967, 2, 2.05, 2.1, 2.133 V; gel 1.967, 2, 2.058, 2.108, 2.142 V; LFP, NMC and \
+        nickel-cadmium by rows of their own, at half charge 3.29, 3.7 and 1.27 V"
     source "flooded: a battery council's table, page seen; LFP: a typical curve, recalled; the rest recalled"
     {
         let cell = line::held(rest_table(chemistry).voltage_V.value, state_of_charge.value);
@@ -184,8 +184,8 @@ calculations! {
         /// Greatest that is consistent with the reading.
         greatest: Ratio in ratio,
     }
-    formula "s where U₀(s) = U/n ∓ (e/n + spread), U₀ as for the rest voltage; spread a cell: flooded 15 mV, AGM, gel, LFP and NMC 20 mV, \
-        nickel-cadmium 30 mV"
+    formula "s where U₀(s) = U/n ∓ (e/n + spread), U₀ as for the rest voltage; spread a cell: flooded 15 mV, AGM, \
+        gel, LFP and NMC 20 mV, nickel-cadmium 30 mV"
     source "as the rest voltage; the spread of flooded is that between two sources, the others recalled"
     fallible "the voltage is above that of a full battery at rest, or far below that of an empty one"
     {
@@ -235,13 +235,15 @@ calculations! {
         /// At about 25 °C, see [`relative_density_at_reference()`].
         density: Ratio in ratio [1.0 ..= 1.4],
     ) -> state_of_charge: Ratio in ratio
-    formula "the straight line between rows: 1.12 is 0, 1.155 is 0.25, 1.19 is 0.5, 1.225 is 0.75, 1.265 is 1; beyond the ends 0 and 1"
+    formula "the straight line between rows: 1.12 is 0, 1.155 is 0.25, 1.19 is 0.5, 1.225 is 0.75, 1.265 is 1; \
+        beyond the ends 0 and 1"
     source "battery council table, page seen; for electrolyte of 1.265 when full"
     { Ratio::new::<ratio>(line::reached(&FLOODED_DENSITY, density.value)) }
 }
 
 #[cfg(test)]
 mod tests {
+    extern crate std;
     use super::*;
     use proptest::prelude::*;
 
@@ -313,6 +315,26 @@ mod tests {
             let density = relative_density(Chemistry::Flooded, charge).unwrap();
             let back = state_of_charge_from_density(density).unwrap().value;
             assert!((back - charge.get()).abs() < 1e-12, "{percent} %");
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn formulas_name_the_figures_of_the_tables() {
+        let of = |name: &str| ENTRIES.iter().find(|e| e.name == name).unwrap().formula;
+        for chemistry in [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel] {
+            for (_, volts) in rest_table(chemistry).voltage_V.value {
+                assert!(of("rest_voltage").contains(&std::format!("{volts}")), "{chemistry}: {volts}");
+            }
+        }
+        for chemistry in Chemistry::ALL {
+            let spread = std::format!("{} mV", 1e3 * rest_table(chemistry).spread_V.value);
+            assert!(of("state_of_charge_from_voltage").contains(&spread), "{chemistry}: {spread}");
+            let half = line::held(rest_table(chemistry).voltage_V.value, 0.5);
+            assert!(of("rest_voltage").contains(&std::format!("{half}")), "{chemistry}: {half}");
+        }
+        for (charge, density) in FLOODED_DENSITY {
+            assert!(of("state_of_charge_from_density").contains(&std::format!("{density} is {charge}")));
         }
     }
 }

@@ -16,8 +16,8 @@ pub const TEMPERATURE_FACTOR: Citation =
 
 /// Cell size correction, (°C, factor), coldest first. Rows of −3.9 to 1.7 °C and of 51.7 °C recalled, the others seen.
 ///
-/// Vented lead-acid of relative density 1.215, base 25 °C; between rows the straight line, as the standard has it. Equal to
-/// `ieee-485-temperature-factor` in `tests/reference/battery.toml` (tested there).
+/// Vented lead-acid of relative density 1.215, base 25 °C; between rows the straight line, as the standard has it.
+/// Equal to `ieee-485-temperature-factor` in `tests/reference/battery.toml` (tested there).
 pub const TEMPERATURE_FACTORS: [(f64, f64); 41] = [
     (-3.9, 1.52),
     (-1.1, 1.43),
@@ -71,9 +71,9 @@ const NO_COLD_FACTOR: &str =
 
 /// Factor by which a lead-acid or nickel-cadmium bank must be larger at a temperature than at 25 °C.
 ///
-/// Flooded: the table of the standard. AGM and gel: the same table, by common practice, since it is that of vented cells; a
-/// maker's own curve governs. Nickel-cadmium: one over [`cold_fraction`]. Above 25 °C the table goes below one;
-/// [`lead_acid_capacity`](super::lead_acid_capacity) takes no credit for it.
+/// Flooded: the table of the standard. AGM and gel: the same table, by common practice, since it is that of vented
+/// cells; a maker's own curve governs. Nickel-cadmium: one over [`cold_fraction`]. Above 25 °C the table goes below
+/// one; [`lead_acid_capacity`](super::lead_acid_capacity) takes no credit for it.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] if the temperature is NaN or outside −60 … 100 °C; [`Error::TableEnds`] below −3.9 and above
@@ -148,7 +148,8 @@ calculations! {
         /// Lowest of the electrolyte, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> factor: Ratio in ratio
-    formula "the straight line between 41 rows from 1.52 at −3.9 °C over 1.19 at 10 °C and 1 at 25 °C to 0.85 at 51.7 °C"
+    formula "the straight line between 41 rows from 1.52 at −3.9 °C over 1.19 at 10 °C and 1 at 25 °C to 0.85 at \
+        51.7 °C"
     source "IEEE Std 485, Table 1, reprinted in IEEE Std 1013; rows up to 1.7 °C and at 51.7 °C recalled"
     fallible "the temperature lies below −3.9 or above 51.7 °C, where the table holds nothing"
     { factor_at(temperature.get::<degree_celsius>()).map(Ratio::new::<ratio>) }

@@ -20,8 +20,9 @@ pub struct CountedCycle {
 
 /// Counts the cycles of a history of peaks and valleys: the rainflow method with three points.
 ///
-/// `history` are values in order of time, such as states of charge; what lies between a peak and a valley is passed over.
-/// `stack` is room to work in, as long as the history at most; each cycle is handed to `found` in the order of counting.
+/// `history` are values in order of time, such as states of charge; what lies between a peak and a valley is passed
+/// over. `stack` is room to work in, as long as the history at most; each cycle is handed to `found` in the order of
+/// counting.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] where a value is NaN or infinite, [`Error::WrongCount`] where the stack is too short.
@@ -110,9 +111,9 @@ fn turns(history: &[f64], at: usize) -> bool {
 
 /// Cycles of one depth that a battery of a chemistry lasts.
 ///
-/// Between rows of [`ChemistryData::cycles`](super::ChemistryData) on a straight line in logarithms, as such curves are drawn:
-/// our choice. Shallower than the first row, cycles in proportion to one over the depth, which gives no credit for shallow
-/// cycles; deeper than the last, the same, which is on the low side too.
+/// Between rows of [`ChemistryData::cycles`](super::ChemistryData) on a straight line in logarithms, as such curves
+/// are drawn: our choice. Shallower than the first row, cycles in proportion to one over the depth, which gives no
+/// credit for shallow cycles; deeper than the last, the same, which is on the low side too.
 fn cycles_at(chemistry: Chemistry, depth: f64) -> f64 {
     let rows = data(chemistry).cycles.value;
     let inverse = |row: &(f64, f64)| row.1 * row.0 / depth;
@@ -150,10 +151,12 @@ calculations! {
         /// Of each cycle.
         depth: Ratio in ratio [0.001 ..= 1.0],
     ) -> cycles: Ratio in ratio
-    formula "the straight line in logarithms between rows (flooded 5000 at 0.1, 2800 at 0.2, 1200 at 0.5, 700 at 0.8; AGM 3000 at 0.1, 1200 at 0.3, \
-        600 at 0.5, 400 at 0.8; gel 4000, 1500, 900, 500 there; LFP 15000 at 0.1, 9000 at 0.2, 3000 at 0.4, 1500 at 0.6, 900 at 0.8, 600 at \
-        1; NMC 6000, 2000, 1000, 600, 400, 300 there; nickel-cadmium 6000 at 0.2, 2500 at 0.5, 1500 at 0.8); beyond the ends N·d of the end"
-    source "lithium: a public table of cycles to 70 %, part of it seen; the rest recalled; the line between rows is our choice"
+    formula "the straight line in logarithms between rows (flooded 5000 at 0.1, 2800 at 0.2, 1200 at 0.5, 700 at \
+        0.8; AGM 3000 at 0.1, 1200 at 0.3, 600 at 0.5, 400 at 0.8; gel 4000, 1500, 900, 500 there; LFP 15000 at 0.1, \
+        9000 at 0.2, 3000 at 0.4, 1500 at 0.6, 900 at 0.8, 600 at 1; NMC 6000, 2000, 1000, 600, 400, 300 there; \
+        nickel-cadmium 6000 at 0.2, 2500 at 0.5, 1500 at 0.8); beyond the ends N·d of the end"
+    source "lithium: a public table of cycles to 70 %, part of it seen; the rest recalled; the line between rows is \
+        our choice"
     { Ratio::new::<ratio>(cycles_at(chemistry, depth.value)) }
 
     /// Part of a battery's life that a number of cycles of one depth uses up.
@@ -259,6 +262,17 @@ mod tests {
             }
             let (depth, cycles) = rows[0];
             assert!((cycles_at(chemistry, 0.5 * depth) - 2.0 * cycles).abs() < 1e-6);
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn the_formula_names_the_figures_of_the_tables() {
+        let formula = ENTRIES.iter().find(|e| e.name == "cycle_life").unwrap().formula;
+        for chemistry in Chemistry::ALL {
+            for (_, cycles) in data(chemistry).cycles.value {
+                assert!(formula.contains(&std::format!("{cycles}")), "{chemistry}: {cycles}");
+            }
         }
     }
 }
