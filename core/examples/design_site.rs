@@ -1,45 +1,67 @@
 //! Designs what a site file leaves out, checks what it states, and prints the report.
 //!
-//! `cargo run --release --example design_site` takes the Heron Point demo; `-- PATH` takes that file.
-//! Exit status 0: nothing stands against the site; 1: a danger, a nonconformity or a check not made; 2: bad input.
+//! `cargo run --release --example design_site` takes the Heron Point demo; `-- PATH` takes that file;
+//! `-- --compare EARLIER LATER` inspects both and prints what changed.
+//! Exit status 0: nothing stands against the site, or nothing differs; 1: a danger, a nonconformity or a check not made, or
+//! something differs; 2: bad input.
 
+use std::ffi::{OsStr, OsString};
 use std::fs::{self, File};
 use std::io::{Read, Write};
 use std::process::ExitCode;
 
-use ampwright::site;
+use ampwright::site::{self, Report};
 
 /// The reader refuses more; reading stops shortly behind it, so that no file fills the memory.
 const MOST_BYTES: u64 = 8 * 1024 * 1024 + 1;
 
 fn main() -> ExitCode {
-    let mut arguments = std::env::args_os().skip(1);
-    let bytes = match (arguments.next(), arguments.next()) {
-        (None, _) => Ok(include_bytes!("sites/heron_point.toml").to_vec()),
-        (Some(path), None) => load(&path),
-        (Some(_), Some(_)) => Err("one site file at a time, please: design_site [PATH]".to_string()),
-    };
-    let bytes = match bytes {
-        Ok(bytes) => bytes,
-        Err(sentence) => {
-            eprintln!("{sentence}");
-            return ExitCode::from(2);
+    let arguments: Vec<OsString> = std::env::args_os().skip(1).collect();
+    let done = match arguments.as_slice() {
+        [] => inspected(include_bytes!("sites/heron_point.toml"))
+            .map(|report| (report.to_string(), report.exit_code())),
+        [compare, earlier, later] if compare == "--compare" => compared(earlier, later),
+        [compare, ..] if compare == "--compare" => {
+            Err("two site files to compare, please: design_site --compare EARLIER LATER".to_string())
         }
+        [path] => load(path)
+            .and_then(|bytes| inspected(&bytes))
+            .map(|report| (report.to_string(), report.exit_code())),
+        _ => Err("one site file at a time, please: design_site [PATH]".to_string()),
     };
-    match site::read_bytes(&bytes).and_then(|document| site::inspect(&document)) {
-        Ok(report) => {
+    match done {
+        Ok((text, status)) => {
             // A reader that closes the pipe early has seen enough.
-            let _ = write!(std::io::stdout().lock(), "{report}");
-            ExitCode::from(report.exit_code())
+            let _ = write!(std::io::stdout().lock(), "{text}");
+            ExitCode::from(status)
         }
-        Err(problems) => {
-            eprintln!("{problems}");
+        Err(sentences) => {
+            eprintln!("{sentences}");
             ExitCode::from(2)
         }
     }
 }
 
-fn load(path: &std::ffi::OsStr) -> Result<Vec<u8>, String> {
+fn inspected(bytes: &[u8]) -> Result<Report, String> {
+    site::read_bytes(bytes)
+        .and_then(|document| site::inspect(&document))
+        .map_err(|problems| problems.to_string())
+}
+
+/// What changed, and 1 where anything did.
+fn compared(earlier: &OsStr, later: &OsStr) -> Result<(String, u8), String> {
+    // Two files: every problem is told with the name of its own.
+    let report = |path: &OsStr| {
+        load(path).and_then(|bytes| {
+            let named = |line: &str| format!("{}: {line}", path.to_string_lossy());
+            inspected(&bytes).map_err(|text| text.lines().map(named).collect::<Vec<_>>().join("\n"))
+        })
+    };
+    let changes = report(later)?.compare(&report(earlier)?);
+    Ok((changes.to_string(), u8::from(!changes.is_empty())))
+}
+
+fn load(path: &OsStr) -> Result<Vec<u8>, String> {
     let name = path.to_string_lossy();
     let fault = |error: std::io::Error| format!("{name}: cannot be read: {error}");
     let about = fs::metadata(path).map_err(fault)?;

@@ -30,6 +30,22 @@ impl Allowed {
     const fn has_no_upper_end(&self) -> bool {
         matches!(self, Self::Above(_) | Self::AtLeast(_))
     }
+
+    /// Refuses a value that is NaN, infinite or out of range. Words are not understood: finite is enough for them.
+    pub(crate) fn check(self, name: &'static str, value: f64, unit: &'static str) -> Result<(), Error> {
+        let admitted = match self {
+            Self::Finite | Self::Words(_) => true,
+            Self::Above(least) => value > least,
+            Self::AtLeast(least) => value >= least,
+            Self::Between(least, most) => value >= least && value <= most,
+            Self::AboveUpTo(least, most) => value > least && value <= most,
+            Self::Code(count) => value >= 0.0 && value < f64::from(count) && libm::floor(value) == value,
+        };
+        if admitted && value.is_finite() {
+            return Ok(());
+        }
+        Err(Error::OutOfRange { name, value, unit, allowed: self })
+    }
 }
 
 impl fmt::Display for Allowed {
@@ -529,6 +545,29 @@ mod tests {
         );
         assert_eq!(told(0.5, Allowed::Code(3)), "x is 0.5; it must be a whole number from 0 to 2");
         assert_eq!(told(0.5, Allowed::Words("even")), "x is 0.5; it must be even");
+    }
+
+    #[test]
+    fn a_range_admits_what_it_says_and_no_nan() {
+        let admits = |allowed: Allowed, value| allowed.check("x", value, "V").is_ok();
+        let cases = [
+            (Allowed::Finite, [true, true, true, true]),
+            (Allowed::Above(0.0), [false, false, true, true]),
+            (Allowed::AtLeast(0.0), [false, true, true, true]),
+            (Allowed::Between(0.0, 1.0), [false, true, true, false]),
+            (Allowed::AboveUpTo(0.0, 1.0), [false, false, true, false]),
+            (Allowed::Code(2), [false, true, true, false]),
+            (Allowed::Words("even"), [true, true, true, true]),
+        ];
+        for (allowed, expected) in cases {
+            assert_eq!([-1.0, 0.0, 1.0, 2.0].map(|value| admits(allowed, value)), expected, "{allowed}");
+            for bad in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY] {
+                assert!(!admits(allowed, bad), "{allowed}: {bad}");
+            }
+        }
+        assert!(!admits(Allowed::Code(2), 0.5));
+        let refused = Allowed::Above(0.0).check("x", -1.0, "V").unwrap_err();
+        assert_eq!(refused.to_string(), "x is -1 V; it must be greater than 0");
     }
 
     #[test]

@@ -204,9 +204,9 @@ class Network:
     def greatest(self, node, through):
         """Greater of the two currents that may flow through a device at one end of a circuit, the end shorted.
 
-        All banks full and warm behind their resistance, conductors cold: nodal equations.
+        All banks full and warm, or at their highest voltage, behind their resistance, conductors cold: nodal equations.
         """
-        emf = self.cells() * self.assumed.full_cell_V
+        emf = {n: max(self.cells() * self.assumed.full_cell_V, value(b["highest"])) for n, b in self.banks.items()}
         names = sorted({e for c in self.circuits for e in c.ends} | set(self.banks))
         free = [n for n in names if n != node]
         index = {name: i for i, name in enumerate(free)}
@@ -225,11 +225,11 @@ class Network:
             siemens = 1 / value(bank["internal_resistance"])
             conductance(siemens, name)
             if name in index:
-                matrix[index[name]][-1] += siemens * emf
+                matrix[index[name]][-1] += siemens * emf[name]
         volts = dict(zip(free, solved(matrix), strict=True))
         inward = {c: volts[c.ends[0] if c.ends[1] == node else c.ends[1]] / c.cold_ohms()
                   for c in self.circuits if node in c.ends}
-        own = emf / value(self.banks[node]["internal_resistance"]) if node in self.banks else 0.0
+        own = emf[node] / value(self.banks[node]["internal_resistance"]) if node in self.banks else 0.0
         beyond = inward[through]
         return max(beyond, own + sum(inward.values()) - beyond)
 

@@ -19,10 +19,10 @@ def amount(text):
 
 
 def two_digits(text):
-    """As `amount`, for a current rounded to two significant digits."""
+    """As `amount`, for a current of two significant digits, the greatest rounded up and the least down."""
     number, unit = re.match(NUMBER + r"\s*(\S*)", text).groups()
     shown = float(number) * UNIT.get(unit, 1.0)
-    return shown, 0.5 * 10 ** (len(str(int(shown))) - 2)
+    return shown, 10 ** (len(str(int(shown))) - 2)
 
 
 class Check:

@@ -114,6 +114,15 @@ pub fn pairs() -> Vec<Pair> {
             "13.7 V",
             "13.5 V",
         ),
+        // 12 V of LFP are four cells, not 12/3.2.
+        bank(
+            "R11",
+            "highest-below-charge-voltage",
+            "the highest voltage of a lithium bank charges as many cells as its label means",
+            lfp().with("bank", "nominal = '12 V'; highest = '?'"),
+            "13.7 V",
+            "13.5 V",
+        ),
         // 6 × 1.6 = 9.6 V.
         bank(
             "R14",

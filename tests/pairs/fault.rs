@@ -1,6 +1,7 @@
 //! Fault currents, and devices fit for direct current (R6).
 //!
-//! Lead-acid full 2.2 V, empty 1.98 V a cell (page seen); 20 A/Ah as upper bound of an unknown bank (page seen:
+//! Greatest from the highest voltage of a bank just charged (common practice, no source), or full, lead-acid 2.2 V a cell
+//! (page seen), LFP 3.65 V (recalled); least from empty, lead-acid 1.98 V (page seen). 20 A/Ah as upper bound of an unknown bank (page seen:
 //! `battery-short-circuit-estimate`). k of Table 43A, IEC 60364-4-43:2008 (page seen): PVC 115, XLPE 143.
 
 use ampwright::site::Severity::{self, Danger, NotChecked};
@@ -41,18 +42,32 @@ fn supply(slug: &'static str, edge: &'static str, site: Document) -> Pair {
 
 pub fn pairs() -> Vec<Pair> {
     vec![
-        // 6 × 2.2 V/5 mΩ = 2.64 kA.
+        // Highest 15 V, above 6 × 2.2 V: 15 V/5 mΩ = 3 kA.
         breaking(
             "breaking capacity against a bank of stated resistance",
             Document::run("iec").with("circuit.device", "breaking = '?'"),
-            "2.7 kA",
-            "2.6 kA",
+            "3.05 kA",
+            "2.95 kA",
         ),
         breaking(
             "breaking capacity against a bank of stated resistance",
             Document::run("us").with("circuit.device", "breaking = '?'"),
-            "2.7 kA",
-            "2.6 kA",
+            "3.05 kA",
+            "2.95 kA",
+        ),
+        // 58.4 V/10 mΩ = 5.84 kA, where 15 cells × 3.65 V would give 5.48 kA.
+        breaking(
+            "breaking capacity against a lithium bank at its highest voltage",
+            lithium("58.4 V"),
+            "5.9 kA",
+            "5.8 kA",
+        ),
+        // 48 V may be 16 cells: 16 × 3.65 V = 58.4 V.
+        breaking(
+            "breaking capacity against the most cells that a lithium bank's nominal voltage stands for",
+            lithium("54 V"),
+            "5.9 kA",
+            "5.8 kA",
         ),
         // The maker's current counts as it is, without the resistance of anything else at the bank.
         breaking(
@@ -72,15 +87,15 @@ pub fn pairs() -> Vec<Pair> {
             "2.05 kA",
             "1.95 kA",
         ),
-        // 13.2 V/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.470 kA from each bank at 20 °C, joints zero: 4.94 kA.
+        // 15 V/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.806 kA from each bank at 20 °C, joints zero: 5.61 kA.
         breaking(
             "all banks feed a fault",
             Document::two_banks("").with("circuit.device", "breaking = '?'"),
-            "5.05 kA",
-            "4.85 kA",
+            "5.7 kA",
+            "5.5 kA",
         ),
-        // At a run's far end what comes through the run counts: 13.2 V/(5 mΩ + 2 m × 1000/(58 × 2.5) mΩ/m) = 702 A, not
-        // the 2.64 kA at its beginning.
+        // At a run's far end what comes through the run counts: 15 V/(5 mΩ + 2 m × 1000/(58 × 2.5) mΩ/m) = 798 A, not
+        // the 3 kA at its beginning.
         breaking(
             "a device at the far end breaks what comes through the run",
             Document::run("iec").add(
@@ -88,8 +103,8 @@ pub fn pairs() -> Vec<Pair> {
                 "family = 'gG'; rating = '20 A'; dc_voltage = '125 V'; breaking = '?'; from_source = '100 mm'; \
                  end = 'to'",
             ),
-            "715 A",
-            "690 A",
+            "815 A",
+            "785 A",
         ),
         // One bank may be switched off: 11.88 V behind 22.5 mΩ (empty, cold, aged), feed of hot 50 mm² with lugs and a 63 A
         // fuse 0.462 + 0.4 + 1.587 mΩ, branch lugs and fuse 5.4 mΩ. gG 20 A opens at 32 A, 371.3 mΩ: 340.9/9.548 = 35.7 m,
@@ -231,8 +246,8 @@ pub fn pairs() -> Vec<Pair> {
             "81000 A2s",
             "84000 A2s",
         ),
-        // A type B breaker trips within 0.1 s above 7 In (IEC 60898-3, recalled): 2640² × 0.1 = 697,000 A²s, k²S² of 6 mm²
-        // 476,000, of 10 mm² 1,322,500 A²s; √(697,000)/115 = 7.26 mm². The 0.1 s are a bound: a conductor that does not
+        // A type B breaker trips within 0.1 s above 7 In (IEC 60898-3, recalled): 3000² × 0.1 = 900,000 A²s, k²S² of 6 mm²
+        // 476,000, of 10 mm² 1,322,500 A²s; √(900,000)/115 = 8.25 mm². The 0.1 s are a bound: a conductor that does not
         // withstand them may withstand the breaker.
         Pair {
             severity: NotChecked,
@@ -242,16 +257,29 @@ pub fn pairs() -> Vec<Pair> {
                 Document::run("iec")
                     .with("circuit", "size = '?'")
                     .with("circuit.device", "family = 'miniature B'"),
-                "7.4 mm2",
-                "7.1 mm2",
+                "8.4 mm2",
+                "8.1 mm2",
             )
         },
     ]
 }
 
+/// A lithium bank of 48 V and 10 mΩ, and the breaking capacity to be told.
+fn lithium(highest: &str) -> Document {
+    Document::run("iec")
+        .with(
+            "bank",
+            &format!(
+                "chemistry = 'lfp'; nominal = '48 V'; cut_off = '44 V'; highest = '{highest}'; \
+                 internal_resistance = '10 mohm'"
+            ),
+        )
+        .with("circuit.device", "breaking = '?'")
+}
+
 /// A device of a site where the second bank's current is not known, with this breaking capacity.
 ///
-/// The first alone: 4 × 3.65 V (recalled)/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.731 kA.
+/// The first alone: highest 15 V/(5 mΩ + 1 m × 1000/(58 × 50) mΩ/m) = 2.806 kA.
 fn beside_an_unknown_bank(breaking: &str) -> Vec<(Severity, &'static str)> {
     let text = Document::two_banks("chemistry = 'lfp'; nominal = '12.8 V'; internal_resistance = none")
         .with("bank", "chemistry = 'lfp'; nominal = '12.8 V'")
@@ -265,6 +293,6 @@ fn beside_an_unknown_bank(breaking: &str) -> Vec<(Severity, &'static str)> {
 
 #[test]
 fn a_bank_of_unknown_current_leaves_the_known_part_as_a_lower_bound() {
-    assert_eq!(beside_an_unknown_bank("2.7 kA"), [(Danger, "breaking-capacity-too-low")]);
-    assert_eq!(beside_an_unknown_bank("2.8 kA"), [(NotChecked, "breaking-capacity-not-checked")]);
+    assert_eq!(beside_an_unknown_bank("2.75 kA"), [(Danger, "breaking-capacity-too-low")]);
+    assert_eq!(beside_an_unknown_bank("2.85 kA"), [(NotChecked, "breaking-capacity-not-checked")]);
 }

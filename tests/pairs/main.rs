@@ -8,6 +8,7 @@ mod ampacity_us;
 mod badly_built;
 mod bank;
 mod cli;
+mod compare;
 mod device;
 mod document;
 mod drop;
@@ -20,7 +21,9 @@ mod pair;
 mod part;
 mod path;
 mod place;
+mod reading;
 mod start;
+mod trust;
 
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -29,8 +32,10 @@ use pair::Pair;
 
 /// Fewer pairs than this and some have been lost.
 const LEAST: usize = 200;
-const RULES: [&str; 16] =
-    ["R1", "R2", "R3", "R4", "R5", "R6", "R7", "R8", "R9", "R11", "R14", "R15", "R16", "R17", "R18", "R19"];
+const RULES: [&str; 17] = [
+    "R1", "R2", "R3", "R4", "R5", "R6", "R7", "R8", "R9", "R11", "R12", "R14", "R15", "R16", "R17", "R18",
+    "R19",
+];
 
 fn pairs() -> Vec<Pair> {
     [
@@ -47,6 +52,8 @@ fn pairs() -> Vec<Pair> {
         metal::pairs(),
         bank::pairs(),
         start::pairs(),
+        trust::pairs(),
+        reading::pairs(),
     ]
     .into_iter()
     .flatten()

@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use ampwright::cable::{Class, Stud};
 use ampwright::device::Supply;
-use ampwright::site::{CircuitLine, DeviceLine, Report, Severity, Site, inspect, read};
+use ampwright::site::{CircuitLine, DeviceLine, Document as Stated, Report, Severity, inspect, read};
 use proptest::prelude::*;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
@@ -126,7 +126,7 @@ fn stated_heron_point() -> String {
 }
 
 /// The document with everything that was designed written into it.
-fn written_back(text: &str, site: &Site, report: &Report) -> String {
+fn written_back(text: &str, site: &Stated, report: &Report) -> String {
     let mut pieces = pieces(text);
     for (circuit, entry) in report.circuits.iter().zip(&site.circuits) {
         let names = [format!("name = \"{}\"", circuit.name), format!("name = '{}'", circuit.name)];
@@ -189,7 +189,7 @@ fn device_keys(line: &DeviceLine, circuit: &CircuitLine) -> Vec<String> {
     keys
 }
 
-fn stud_of(site: &Site, name: &str) -> Option<Stud> {
+fn stud_of(site: &Stated, name: &str) -> Option<Stud> {
     let banks = site.banks.iter().map(|x| (&x.name, x.stud));
     let boards = site.boards.iter().map(|x| (&x.name, x.stud));
     let inverters = site.inverters.iter().map(|x| (&x.name, x.stud));

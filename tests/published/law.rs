@@ -266,10 +266,10 @@ const ENERGY: &[(&str, Check)] = &[
 ];
 
 const ENERGY_ELSEWHERE: &[(&str, &str)] = &[
-    ("generator-c5-4000ft", "derating of engines belongs to the room of generators"),
+    ("generator-c5-4000ft", "deratings of engines: `energy`"),
     ("nec-690.8-156", "factors of a rule set"),
-    ("kelvin-200A-two-core", "economic size is no law of this room yet"),
-    ("kelvin-250A-feeder", "economic size is no law of this room yet"),
+    ("kelvin-200A-two-core", "economic size: `energy`"),
+    ("kelvin-250A-feeder", "economic size: `energy`"),
 ];
 
 /// 1 cmil in mm²: the circle of 1 mil.

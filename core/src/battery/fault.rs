@@ -182,7 +182,7 @@ pub const fn cell_voltages(chemistry: Chemistry) -> CellVoltages {
 /// Voltage behind the resistance of a bank in a fault, per cell: at most and at least.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct FaultVoltage {
-    /// Full and just charged, V a cell.
+    /// Full, V a cell; a lead-acid bank on charge stands above it, and a site counts its highest voltage then.
     pub greatest_V: f64,
     /// Empty and rested, V a cell.
     pub least_V: f64,

@@ -87,6 +87,16 @@ macro_rules! unit {
     ($want:ident microfarad) => {
         $crate::catalogue::unit::pick!($want, ::uom::si::capacitance::microfarad, "µF", "uF")
     };
+    ($want:ident liter) => {
+        $crate::catalogue::unit::pick!($want, ::uom::si::volume::liter, "L", "L")
+    };
+    // Not of `uom`: money of any currency, the same throughout.
+    ($want:ident money_per_kWh) => {
+        $crate::catalogue::unit::pick!($want, (), "/kWh", "per_kWh")
+    };
+    ($want:ident money_per_m_mm2) => {
+        $crate::catalogue::unit::pick!($want, (), "/(m·mm²)", "per_m_mm2")
+    };
     // Not of `uom`: a plain number of V/K.
     ($want:ident volt_per_kelvin) => {
         $crate::catalogue::unit::pick!($want, (), "V/K", "V_per_K")
@@ -127,6 +137,8 @@ macro_rules! pick {
 macro_rules! value {
     (volt_per_kelvin $type:ident $x:expr) => { $crate::quantity::volts_per_kelvin($x) };
     (per_hour $type:ident $x:expr) => { <$type>::unchecked($x) };
+    (money_per_kWh $type:ident $x:expr) => { <$type>::unchecked($x) };
+    (money_per_m_mm2 $type:ident $x:expr) => { <$type>::unchecked($x) };
     (choice $type:ident $x:expr) => {
         <$type as $crate::catalogue::Choice>::of_code($x).unwrap_or(<$type as $crate::catalogue::Choice>::FIRST)
     };
@@ -137,12 +149,20 @@ macro_rules! value {
 macro_rules! plain {
     (volt_per_kelvin $x:expr) => { $x.value };
     (per_hour $x:expr) => { $x.get() };
+    (money_per_kWh $x:expr) => { $x.get() };
+    (money_per_m_mm2 $x:expr) => { $x.get() };
     ($unit:ident $x:expr) => { $x.get::<$crate::catalogue::unit::unit!(kind $unit)>() };
 }
 
 /// A value of the type as a plain number in the base unit, in which checks are made.
 macro_rules! base {
     (per_hour $x:expr) => {
+        $x.get()
+    };
+    (money_per_kWh $x:expr) => {
+        $x.get()
+    };
+    (money_per_m_mm2 $x:expr) => {
         $x.get()
     };
     ($unit:ident $x:expr) => {

@@ -146,26 +146,38 @@ impl fmt::Display for Numbers<'_> {
             }
             return write!(f, "{actual} {unit}, {words} {limit} {unit}");
         }
-        // Prospective currents are bounds, not four digits (R6).
-        match self.0.check {
-            Check::Breaking => {
-                write!(f, "{} {unit}, {words} {} {unit}", Figures(*actual), Figures(bound(*limit)))
-            }
-            Check::LeastFault => {
-                write!(f, "{} {unit}, {words} {} {unit}", Figures(bound(*actual)), Figures(*limit))
-            }
-            _ => write!(f, "{} {unit}, {words} {} {unit}", Figures(*actual), Figures(*limit)),
-        }
+        // Prospective currents are bounds, not four digits (R6); rounded, a passed check must not read as a failed one.
+        let (rounded_actual, rounded_limit) = match self.0.check {
+            Check::Breaking => (*actual, upper_bound(*limit)),
+            Check::LeastFault => (lower_bound(*actual), *limit),
+            _ => (*actual, *limit),
+        };
+        let (actual, limit) = if *outcome == Outcome::Passed && rounded_actual < rounded_limit {
+            (*actual, *limit)
+        } else {
+            (rounded_actual, rounded_limit)
+        };
+        write!(f, "{} {unit}, {words} {} {unit}", Figures(actual), Figures(limit))
     }
 }
 
-/// Two figures: as many as a prospective current deserves.
-pub fn bound(amps: f64) -> f64 {
+/// A greatest prospective current in two figures, as many as it deserves: rounded up.
+pub fn upper_bound(amps: f64) -> f64 {
+    two_figures(amps, |units| libm::ceil(units * (1.0 - 1e-9)))
+}
+
+/// A least prospective current in two figures: rounded down.
+pub fn lower_bound(amps: f64) -> f64 {
+    two_figures(amps, |units| libm::floor(units * (1.0 + 1e-9)))
+}
+
+/// The last bit of a sum must not move a figure.
+fn two_figures(amps: f64, round: fn(f64) -> f64) -> f64 {
     if !(amps > 0.0 && amps.is_finite()) {
         return 0.0;
     }
     let unit = libm::pow(10.0, libm::floor(libm::log10(amps)) - 1.0);
-    libm::round(amps / unit) * unit
+    round(amps / unit) * unit
 }
 
 impl fmt::Display for Checked {

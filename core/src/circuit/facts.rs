@@ -9,7 +9,7 @@ use super::checked::{Checked, Outcome};
 use super::run::Run;
 use crate::cable::{Conductor, Material, adiabatic_k};
 use crate::citation::{Citation, Seen};
-use crate::device::{Polarity, Supply};
+use crate::device::{Polarity, Supply, least_let_through_A2s};
 use crate::error::Error;
 use crate::protection::{Earthing, Guard, least_rating};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Ratio};
@@ -36,6 +36,8 @@ const BY_THUMB: Citation = Citation::new(
 const INSTANTANEOUS_S: f64 = 0.1;
 const INSTANTANEOUS: Citation =
     Citation::new("IEC 60898-1", "instantaneous tripping below 0.1 s", Seen::Recalled);
+
+const LET_THROUGH: Citation = Citation::new("the site file", "let_through", Seen::Stated);
 
 /// What the checks of one run share.
 pub(super) struct Facts<'a> {
@@ -236,7 +238,7 @@ impl Facts<'_> {
             Ok(ampacity) => {
                 let (limit, by_terminal) = self.device_limit(ampacity);
                 let citation = match worst_citation(ampacity) {
-                    recalled if recalled.seen == Seen::Recalled => recalled,
+                    worse if matches!(worse.seen, Seen::Recalled | Seen::Stated) => worse,
                     _ => limit.citation,
                 };
                 Checked::at_most(
@@ -308,7 +310,7 @@ impl Facts<'_> {
             limit.value * ampacity.corrected.get::<ampere>(),
             "A",
             what,
-            limit.citation,
+            own_factor(ampacity).unwrap_or(limit.citation),
         ))
     }
 
@@ -457,7 +459,14 @@ impl Facts<'_> {
             );
         }
         if let Some(stated) = guard.let_through_A2s {
-            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, adiabatic));
+            if stated < least_let_through_A2s(device.family, device.rating).0 {
+                return missing(
+                    "withstand of the conductor: the stated let_through is less than any such device lets pass",
+                );
+            }
+            // The limit is the law's, but passing it rests on what is stated.
+            let citation = if stated <= bearable { LET_THROUGH } else { adiabatic };
+            return Some(Checked::at_most(Check::Withstand, stated, bearable, "A²s", what, citation));
         }
         if let Some(times) = device.family.instantaneous_ratio()
             && amps >= times * device.rating.get::<ampere>()
@@ -551,10 +560,18 @@ impl Facts<'_> {
     }
 }
 
-/// A recalled cell or factor marks the whole result.
+/// A factor of the user's own marks the whole result, and so does a recalled cell or factor.
 fn worst_citation(ampacity: &Ampacity) -> Citation {
+    if let Some(stated) = own_factor(ampacity) {
+        return stated;
+    }
     let recalled = ampacity.factors.iter().any(|f| f.citation.seen == Seen::Recalled);
     if recalled { ampacity.base.citation.recalled() } else { ampacity.base.citation }
+}
+
+/// Source of a factor that the user states in place of the set's.
+fn own_factor(ampacity: &Ampacity) -> Option<Citation> {
+    ampacity.factors.iter().map(|f| f.citation).find(|c| c.seen == Seen::Stated)
 }
 
 /// A table without an answer is a check not made.

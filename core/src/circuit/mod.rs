@@ -11,7 +11,7 @@ mod tests;
 
 use crate::catalogue::Entry;
 
-pub use checked::{Checked, Numbers, Outcome, Relation, bound};
+pub use checked::{Checked, Numbers, Outcome, Relation, lower_bound, upper_bound};
 pub use inverter::{InverterFeed, inverter_feed};
 pub use judge::{Judgement, capacity, judge};
 pub use run::{Demand, Run};

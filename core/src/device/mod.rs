@@ -3,6 +3,7 @@
 mod conventional;
 mod data;
 mod family;
+mod let_through;
 mod operating;
 mod piece;
 mod rating;
@@ -11,6 +12,7 @@ use crate::catalogue::Entry;
 
 pub use conventional::{Band, Start};
 pub use family::{Family, FamilyData};
+pub(crate) use let_through::least_let_through_A2s;
 pub use operating::{ConventionalCurrents, continuous_current, conventional_currents};
 pub use piece::{Device, Polarity, Supply};
 

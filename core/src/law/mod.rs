@@ -7,6 +7,7 @@ mod drop;
 mod efficiency;
 mod fault;
 mod gauge;
+mod kelvin;
 mod line;
 mod ohm;
 mod rate;
@@ -22,6 +23,7 @@ pub use drop::*;
 pub use efficiency::*;
 pub use fault::*;
 pub use gauge::*;
+pub use kelvin::*;
 pub use line::*;
 pub use ohm::*;
 pub use rate::*;
@@ -41,5 +43,6 @@ pub const CATALOGUE: &[&[Entry]] = &[
     drop::ENTRIES,
     line::ENTRIES,
     fault::ENTRIES,
+    kelvin::ENTRIES,
     gauge::ENTRIES,
 ];

@@ -21,6 +21,7 @@ pub use unit::Dimension;
 pub use uom::si::f64::{
     Angle, Area, Capacitance, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance,
     ElectricalResistivity, Energy, Length, Power, Ratio, TemperatureInterval, ThermodynamicTemperature, Time,
+    Volume,
 };
 
 pub use uom::si::f64::{

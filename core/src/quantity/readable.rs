@@ -63,6 +63,7 @@ const fn ladder(dimension: Dimension) -> (&'static str, &'static [&'static str])
         Dimension::VoltagePerTemperature => ("mV/K", &["mV/K", "V/K"]),
         Dimension::RatioPerTemperature => ("%/K", &["%/K"]),
         Dimension::VolumeFlow => ("m3/h", &["m3/h"]),
+        Dimension::Volume => ("L", &["L", "m3"]),
         Dimension::Capacitance => ("uF", &["uF", "mF", "F"]),
     }
 }

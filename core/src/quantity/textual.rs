@@ -8,7 +8,7 @@ use super::{
     Angle, Area, Capacitance, ChargeRate, ElectricCharge, ElectricCurrent, ElectricPotential,
     ElectricalResistance, ElectricalResistivity, Energy, Irradiance, Irradiation, Length, LinearResistance,
     Power, Ratio, RatioPerTemperature, StateOfCharge, TemperatureInterval, ThermodynamicTemperature, Time,
-    VoltagePerTemperature, VolumeFlow,
+    VoltagePerTemperature, Volume, VolumeFlow,
 };
 use crate::error::Error;
 
@@ -47,6 +47,7 @@ textual! {
     VoltagePerTemperature: VoltagePerTemperature;
     RatioPerTemperature: RatioPerTemperature;
     VolumeFlow: VolumeFlow;
+    Volume: Volume;
     Capacitance: Capacitance;
 }
 

@@ -49,8 +49,10 @@ pub enum Dimension {
     VoltagePerTemperature,
     /// Ratio per temperature difference.
     RatioPerTemperature,
-    /// Volume of air in a time.
+    /// Volume of air or of fuel in a time.
     VolumeFlow,
+    /// Volume of fuel.
+    Volume,
     /// Capacitance.
     Capacitance,
 }
@@ -79,7 +81,8 @@ impl Dimension {
             Irradiation => "an irradiation",
             VoltagePerTemperature => "a voltage per kelvin",
             RatioPerTemperature => "a ratio per kelvin",
-            VolumeFlow => "a flow of air",
+            VolumeFlow => "a volume in a time",
+            Volume => "a volume",
             Capacitance => "a capacitance",
         }
     }
@@ -107,7 +110,8 @@ impl Dimension {
             Irradiation => "'3.4 kWh/m2'",
             VoltagePerTemperature => "'-5 mV/K'",
             RatioPerTemperature => "'-0.3 %/K'",
-            VolumeFlow => "'12 m3/h'",
+            VolumeFlow => "'12 m3/h' or '2.7 L/h'",
+            Volume => "'20 L'",
             Capacitance => "'4700 uF'",
         }
     }
@@ -194,6 +198,9 @@ pub(super) const UNITS: &[Unit] = &[
     unit("%/K", RatioPerTemperature, 1e-2),
     unit("m3/s", VolumeFlow, 1.0),
     unit("m3/h", VolumeFlow, 1.0 / 3.6e3),
+    unit("L/h", VolumeFlow, 1e-3 / 3.6e3),
+    unit("m3", Volume, 1.0),
+    unit("L", Volume, 1e-3),
     unit("F", Capacitance, 1.0),
     unit("mF", Capacitance, 1e-3),
     unit("uF", Capacitance, 1e-6),
@@ -266,7 +273,8 @@ mod tests {
         use uom::si::{
             area::*, capacitance::*, electric_charge::*, electric_current::*, electric_potential::*,
             electrical_resistance::*, electrical_resistivity::*, energy::*, heat_flux_density::*, length::*,
-            power::*, radiant_exposure::*, ratio::*, temperature_coefficient::*, time::*, volume_rate::*,
+            power::*, radiant_exposure::*, ratio::*, temperature_coefficient::*, time::*, volume::*,
+            volume_rate::*,
         };
         use uom::si::{f64::ThermodynamicTemperature, thermodynamic_temperature as tt};
         macro_rules! check {
@@ -294,7 +302,7 @@ mod tests {
             "°" Angle Angle deg;"W/m²" Irradiance HeatFluxDensity watt_per_square_meter;
             "Wh/m²" Irradiation RadiantExposure watt_hour_per_square_meter;
             "/K" RatioPerTemperature TemperatureCoefficient per_kelvin;
-            "m³/h" VolumeFlow VolumeRate cubic_meter_per_hour; "µF" Capacitance Capacitance microfarad;
+            "m³/h" VolumeFlow VolumeRate cubic_meter_per_hour; "L" Volume Volume liter; "µF" Capacitance Capacitance microfarad;
         }
         for x in [-40.0, 0.0, 20.0, 25.0, 77.3, 250.0] {
             let unit = find("°C", Temperature).unwrap();

@@ -26,6 +26,9 @@ pub struct Rules {
     overrides: Overrides,
 }
 
+/// A source that does not measure at the bank charges it too low by this drop: physics, the same in every set.
+const CHARGING_DROP: f64 = 0.01;
+
 impl Rules {
     /// The set named `us`, `iec`, `craft_iso`, `craft_us`, or with a pinned edition such as `us-2023`.
     ///
@@ -203,13 +206,24 @@ impl Rules {
     /// ```
     pub fn drop_limit(&self, usage: LoadUse) -> DropLimit {
         let rule = &self.set.drop;
+        if usage == LoadUse::Charging {
+            return DropLimit {
+                ratio: Ratio::new::<ratio>(CHARGING_DROP),
+                required: true,
+                citation: Citation::new(
+                    "design rule",
+                    "R11, sense at the bank or at most 1 %",
+                    Seen::Derived,
+                ),
+            };
+        }
         if let Some(own) = self.overrides.drop {
             return DropLimit { ratio: own, required: true, citation: STATED };
         }
         let limit = match usage {
             LoadUse::Critical => rule.critical,
             LoadUse::Lighting => rule.lighting,
-            LoadUse::Other => rule.other,
+            LoadUse::Other | LoadUse::Charging => rule.other,
         };
         DropLimit {
             ratio: Ratio::new::<ratio>(limit.value),

@@ -12,7 +12,9 @@ mod craft_us;
 mod iec;
 mod overrides;
 mod practice;
+mod pv;
 mod query;
+mod surroundings;
 mod table;
 mod us;
 mod usual;
@@ -27,8 +29,13 @@ pub use book::{
 };
 pub use overrides::{Overridden, Overrides, OwnValue};
 pub use practice::{PracticeFigure, practice_figure};
+pub use pv::{ColdRow, ColdTable, PvRule};
 pub use query::{
     Ampacity, AmpacityQuery, Check, CurrentRule, DeviceLimit, DropLimit, Factor, Installation, Key, Limit,
     LoadUse, Space, Terms,
+};
+pub use surroundings::{
+    Asked, Bonding, BondingRow, OPENING_CM2_PER_M3_H, SPARK_DISTANCE_MM, SurgeLength, Surroundings,
+    TouchLimits,
 };
 pub use table::{AmpacityTable, Band, Cell, Column, FactorColumn, FactorTable};

@@ -163,6 +163,8 @@ pub enum LoadUse {
     Lighting,
     /// Everything else.
     Other,
+    /// From a source that measures its charge voltage at its own terminals to the bank (R11).
+    Charging,
 }
 
 /// Order of the checks where a set has no rule of its own for the terminal.

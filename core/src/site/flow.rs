@@ -9,16 +9,22 @@ use uom::si::electric_potential::volt;
 use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
+use super::energy::load_of;
 use super::fault::Fault;
 use super::graph::{Graph, Item, Tree, path_to};
-use super::model::{BankEntry, LoadKind, Return, Site};
+use super::model::{LoadKind, Return};
 use super::plan::sources;
 use super::state::{Solver, State};
+use super::system::{BankEntry, Site};
 use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
+use crate::load::{LoadSet, MaximalSets, maximal_sets};
 use crate::network::Source;
 use crate::quantity::{ElectricalResistance, Length, ThermodynamicTemperature};
 use crate::rules::LoadUse;
+
+/// Sets of loads that are solved apart; beyond it all run at once, which is never too little.
+const MOST_SETS: usize = 64;
 
 /// What flows in one circuit.
 #[derive(Clone, Copy, Debug)]
@@ -62,6 +68,10 @@ pub(super) struct Flow {
     pub ohms_before: f64,
     /// What stands at its end, seen from the source.
     pub end: Option<Item>,
+    /// It is its sources, not its loads, that drive the design current.
+    pub charged: bool,
+    /// Greatest current of a source that limits itself, where the circuit leaves one, A.
+    pub limit: Option<f64>,
 }
 
 /// Conductors, positive and negative, and joints of a circuit.
@@ -159,6 +169,10 @@ impl Flows {
                 flow.low_current = flow.low_current.map(|low| low.max(stated));
             }
         }
+        for tree in trees {
+            flows.take_chargers(site, tree);
+            flows.take_limits(site, tree);
+        }
         flows
     }
 
@@ -197,7 +211,11 @@ impl Flows {
                 }
                 // A feeder of boards is held to the stricter limit of panel feeders (R17).
                 Item::Board(_) => flow.usage = LoadUse::Critical,
-                Item::Bank(_) => {}
+                Item::ConverterInput(i) => {
+                    flow.least_voltage =
+                        site.converters.get(i).and_then(|c| c.least).map(|v| v.get::<volt>());
+                }
+                Item::Bank(_) | Item::Charger(_) | Item::ControllerInput(_) => {}
             }
         }
     }
@@ -252,12 +270,11 @@ impl Flows {
         let mut high = low.clone();
         for island in &graph.islands() {
             let Some(first) = root_bank(site, island) else { continue };
-            let solver = Solver { site, drawn: at_low, nominal: first.nominal, ohms };
-            let solver_high = Solver { drawn: at_high, ..solver };
-            for bank in island.nodes.iter().filter_map(|n| match n.item {
-                Item::Bank(bank) => Some(bank),
-                _ => None,
-            }) {
+            let sets = together(site, island);
+            for (off, bank) in sets.iter().flat_map(|off| island.nodes.iter().map(move |n| (off, n.item))) {
+                let Item::Bank(bank) = bank else { continue };
+                let solver = Solver { site, drawn: at_low, nominal: first.nominal, ohms, off };
+                let solver_high = Solver { drawn: at_high, ..solver };
                 let (Some(tree), Some(bank)) = (graph.island_from(bank), site.banks.get(bank)) else {
                     continue;
                 };
@@ -316,6 +333,48 @@ impl Flow {
     }
 }
 
+/// Which loads do not run, for each of the largest sets of loads that meet; one list without any where no load states
+/// its times, or where there are too many to tell apart: then all run at once.
+fn together(site: &Site, island: &Tree) -> Vec<Vec<bool>> {
+    let all = || vec![Vec::new()];
+    let loads: Vec<usize> = island
+        .nodes
+        .iter()
+        .filter_map(|n| match n.item {
+            Item::Load(i) => Some(i),
+            _ => None,
+        })
+        .collect();
+    let is_timed =
+        |&i: &usize| site.loads.get(i).is_some_and(|l| !l.use_of.at.is_empty() || l.use_of.months.is_some());
+    if loads.len() > LoadSet::ROOM || !loads.iter().any(is_timed) {
+        return all();
+    }
+    let Some(bank) = root_bank(site, island) else { return all() };
+    let occasion = |&i: &usize| {
+        let load = load_of(site, site.loads.get(i)?, bank.nominal).ok()?;
+        load.occasion(None).ok()
+    };
+    let Some(occasions) = loads.iter().map(occasion).collect::<Option<Vec<_>>>() else { return all() };
+    let mut sets = [LoadSet::default(); MOST_SETS];
+    match maximal_sets(&occasions, &mut sets) {
+        MaximalSets::AllAtOnce | MaximalSets::Exact(0) => all(),
+        MaximalSets::Exact(count) => sets
+            .iter()
+            .take(count)
+            .map(|set| {
+                let mut off = vec![false; site.loads.len()];
+                for (place, &load) in loads.iter().enumerate() {
+                    if let Some(slot) = off.get_mut(load) {
+                        *slot = !set.contains(place);
+                    }
+                }
+                off
+            })
+            .collect(),
+    }
+}
+
 /// The state in which a circuit's end stands lowest, of those in which it carries current worth the name: where another
 /// bank feeds, a cable may lie dead beside the current.
 fn lowest(states: &[State]) -> Option<&State> {
@@ -347,6 +406,8 @@ const fn none() -> Flow {
         started: None,
         ohms_before: 0.0,
         end: None,
+        charged: false,
+        limit: None,
     }
 }
 

@@ -6,7 +6,7 @@ use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
 
-use super::model::Site;
+use super::system::Site;
 
 /// What a node is, by its place in the document.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -15,6 +15,12 @@ pub(super) enum Item {
     Board(usize),
     Load(usize),
     Inverter(usize),
+    /// Output of a controller or generator, by its place among the chargers.
+    Charger(usize),
+    /// Where an array feeds into a controller.
+    ControllerInput(usize),
+    /// Where a DC–DC converter draws from.
+    ConverterInput(usize),
 }
 
 /// A node and the circuit it hangs by.
@@ -52,15 +58,27 @@ impl Graph {
             names.insert(name, items.len());
             items.push(item);
         };
+        // A source that has an input too: a circuit from it leaves its output, a circuit to it enters there.
         site.banks.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Bank(i)));
         site.boards.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Board(i)));
         site.loads.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Load(i)));
         site.inverters.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Inverter(i)));
+        site.chargers.iter().enumerate().for_each(|(i, x)| add(x.name.as_str(), Item::Charger(i)));
+        let mut inputs = BTreeMap::new();
+        for (i, controller) in site.controllers.iter().enumerate() {
+            inputs.insert(controller.name.as_str(), items.len());
+            items.push(Item::ControllerInput(i));
+        }
+        for (i, converter) in site.converters.iter().enumerate() {
+            inputs.insert(converter.name.as_str(), items.len());
+            items.push(Item::ConverterInput(i));
+        }
 
         let mut joined = vec![Vec::new(); items.len()];
         for (index, circuit) in site.circuits.iter().enumerate() {
             // The reader has refused ends that do not exist.
-            let ends = names.get(circuit.from.as_str()).zip(names.get(circuit.to.as_str()));
+            let to = inputs.get(circuit.to.as_str()).or_else(|| names.get(circuit.to.as_str()));
+            let ends = names.get(circuit.from.as_str()).zip(to);
             let Some((&from, &to)) = ends else { continue };
             if let Some(list) = joined.get_mut(from) {
                 list.push((index, to, false));

@@ -8,10 +8,10 @@ use uom::si::electric_current::ampere;
 
 use super::flow::Flows;
 use super::graph::{Item, Tree};
-use super::model::Site;
 use super::plan::{Draft, Planned};
 use super::reach::Reach;
 use super::read::{Problem, Problems};
+use super::system::Site;
 use crate::circuit::{Checked, Outcome, capacity};
 use crate::rules::Check;
 

@@ -3,19 +3,23 @@
 use alloc::string::String;
 use alloc::vec::Vec;
 
-use crate::battery::Chemistry;
 use crate::cable::{Class, Coating, Insulation, JointKind, Material, Stud};
 use crate::device::{Family, Polarity, Supply};
 pub use crate::protection::{Earthing, End, Pole};
 use crate::quantity::{
-    ConductorSize, ElectricCharge, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power,
-    Ratio, ThermodynamicTemperature,
+    ConductorSize, ElectricCurrent, ElectricPotential, ElectricalResistance, Length, Power, Ratio,
+    ThermodynamicTemperature, Time,
+};
+
+use super::parts::{
+    ArrayPart, BankPart, ControllerPart, ConverterPart, GeneratorPart, InverterPart, ModulePart, Place,
+    Reading, StockBattery, Weather,
 };
 use crate::rules::{Installation, LoadUse, Rules, Space};
 
-/// The whole document.
+/// The whole document, as it is stated.
 #[derive(Clone, Debug)]
-pub struct Site {
+pub struct Document {
     /// `[site] name`.
     pub name: String,
     /// `[site] rules` with `[rules.override]`.
@@ -24,47 +28,32 @@ pub struct Site {
     pub earthing: Earthing,
     /// `[site] ambient = ["-25 degC", "30 degC"]`: least and greatest.
     pub ambient: (ThermodynamicTemperature, ThermodynamicTemperature),
+    /// The other keys of `[site]`.
+    pub place: Place,
+    /// `[weather]`.
+    pub weather: Option<Weather>,
     /// `[[bank]]`, in file order; all `Vec`s are.
-    pub banks: Vec<BankEntry>,
+    pub banks: Vec<BankPart>,
+    /// `[[array]]`.
+    pub arrays: Vec<ArrayPart>,
+    /// `[[controller]]`.
+    pub controllers: Vec<ControllerPart>,
+    /// `[[generator]]`.
+    pub generators: Vec<GeneratorPart>,
+    /// `[[converter]]`.
+    pub converters: Vec<ConverterPart>,
     /// `[[board]]`.
     pub boards: Vec<Board>,
     /// `[[inverter]]`.
-    pub inverters: Vec<InverterEntry>,
+    pub inverters: Vec<InverterPart>,
     /// `[[load]]`.
     pub loads: Vec<LoadEntry>,
     /// `[[circuit]]`.
     pub circuits: Vec<CircuitEntry>,
+    /// `[[reading]]`.
+    pub readings: Vec<Reading>,
     /// `[stock]`.
     pub stock: Stock,
-}
-
-/// `[[bank]]`.
-#[derive(Clone, Debug)]
-pub struct BankEntry {
-    /// `name`.
-    pub name: String,
-    /// Line of its header in the file, from 1.
-    pub line: u32,
-    /// `chemistry`: `flooded`, `agm`, `gel`, `lfp`, `nmc`, `nicd`.
-    pub chemistry: Chemistry,
-    /// `nominal = "24 V"`.
-    pub nominal: ElectricPotential,
-    /// `capacity = "400 Ah"`, of the whole bank.
-    pub capacity: ElectricCharge,
-    /// `strings = 2`, in parallel; 1 if absent.
-    pub strings: u32,
-    /// `cut_off = "21 V"`: least terminal voltage in use.
-    pub cut_off: ElectricPotential,
-    /// `highest = "31 V"`: cold-compensated equalising or charge voltage.
-    pub highest: ElectricPotential,
-    /// `short_circuit = "4 kA"`: the maker's stated value for the whole bank.
-    pub short_circuit: Option<ElectricCurrent>,
-    /// `internal_resistance = "6 mohm"`: whole bank, full, warm, new.
-    pub internal_resistance: Option<ElectricalResistance>,
-    /// `greatest_discharge = "200 A"`: the maker's or the pack's own limit.
-    pub greatest_discharge: Option<ElectricCurrent>,
-    /// `stud = "M8"` of the terminals.
-    pub stud: Option<Stud>,
 }
 
 /// `[[board]]`: a busbar or distribution board.
@@ -80,31 +69,8 @@ pub struct Board {
     pub stud: Option<Stud>,
     /// `lugs_on_stud = 3`: the most lugs on one stud.
     pub lugs_on_stud: Option<u32>,
-}
-
-/// `[[inverter]]`.
-#[derive(Clone, Debug)]
-pub struct InverterEntry {
-    /// `name`.
-    pub name: String,
-    /// Line in the file.
-    pub line: u32,
-    /// `power = "1200 W"`: continuous, AC side.
-    pub power: Power,
-    /// `surge = "2400 W"`.
-    pub surge: Option<Power>,
-    /// `efficiency = 0.9` or `"90 %"`: at full power and lowest voltage.
-    pub efficiency: Ratio,
-    /// `idle = "12 W"`.
-    pub idle: Option<Power>,
-    /// `least = "21 V"`: it trips below.
-    pub least: Option<ElectricPotential>,
-    /// `greatest = "32 V"`.
-    pub greatest: Option<ElectricPotential>,
-    /// `stud = "M8"`.
-    pub stud: Option<Stud>,
-    /// `terminal = "75 degC"`: marked temperature rating.
-    pub terminal: Option<ThermodynamicTemperature>,
+    /// Not in the document: made by the design.
+    pub designed: bool,
 }
 
 /// How a load draws (R3).
@@ -147,6 +113,44 @@ pub struct LoadEntry {
     pub stud: Option<Stud>,
     /// `terminal = "75 degC"`.
     pub terminal: Option<ThermodynamicTemperature>,
+    /// What tells when it runs and what it costs in energy.
+    pub use_of: LoadUseTime,
+    /// `ac = true`: fed by an inverter, not from a board.
+    pub ac: bool,
+    /// `inverter`: which one, where there are several.
+    pub inverter: Option<String>,
+    /// `power_factor` of an AC load.
+    pub power_factor: Option<Ratio>,
+    /// `start_power = "1440 W"` of an AC load.
+    pub start_power: Option<Power>,
+    /// `standing = true`: always on, by its nature: monitor, alarm, controller.
+    pub standing: bool,
+    /// `priority = 1`: shed last.
+    pub priority: Option<u32>,
+    /// `past_disconnect = true`: wired before the bank's disconnect.
+    pub past_disconnect: bool,
+    /// `board`: which feeds it, where the circuit is designed.
+    pub board: Option<String>,
+    /// `route = "12 m"`: one-way route to that board, where the circuit is designed.
+    pub route: Option<Length>,
+}
+
+/// When a load runs.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct LoadUseTime {
+    /// `hours = "4 h"` a day.
+    pub hours: Option<Time>,
+    /// `at = ["06:00-08:00", "18:00-23:00"]`: minutes of the day, beginning and end; an end before its beginning is
+    /// past midnight.
+    pub at: Vec<(u16, u16)>,
+    /// `months = ["Nov", "Dec"]`: bit 0 is January; all if absent.
+    pub months: Option<u16>,
+    /// `days_per_week = 2`.
+    pub days_per_week: Option<u32>,
+    /// `duty = "40 %"` of the time it is switched on.
+    pub duty: Option<Ratio>,
+    /// `duty_hot = "60 %"` at the greatest ambient.
+    pub duty_hot: Option<Ratio>,
 }
 
 /// Way back of the current.
@@ -333,6 +337,14 @@ pub struct Stock {
     pub devices: Vec<StockDevice>,
     /// `[[stock.lug]]`.
     pub lugs: Vec<StockLug>,
+    /// `[[stock.battery]]`.
+    pub batteries: Vec<StockBattery>,
+    /// `[[stock.module]]`.
+    pub modules: Vec<ModulePart>,
+    /// `[[stock.controller]]`.
+    pub controllers: Vec<ControllerPart>,
+    /// `[[stock.inverter]]`.
+    pub inverters: Vec<InverterPart>,
 }
 
 /// `[[stock.cable]]`.

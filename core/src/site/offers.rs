@@ -8,9 +8,10 @@ use uom::si::electric_current::ampere;
 use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole, Site};
+use super::model::{CircuitEntry, DeviceEntry, Earthing, Pole};
 use super::plan::{Draft, Fitted};
 use super::read::Problem;
+use super::system::Site;
 use crate::cable::{
     Class, Coating, Conductor, JointKind, Material, joint_resistance, rated_joint_resistance,
 };
@@ -281,7 +282,7 @@ pub(super) fn joints(site: &Site, circuit: &CircuitEntry, fitted: &[Fitted]) -> 
 }
 
 /// Generic resistance of a part, by its rating where that is known.
-fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
+pub(super) fn rated(kind: JointKind, rating: Option<ElectricCurrent>) -> ElectricalResistance {
     rating
         .and_then(|rating| rated_joint_resistance(kind, rating).ok())
         .unwrap_or_else(|| joint_resistance(kind))

@@ -19,10 +19,11 @@ use super::fault::Fault;
 use super::flow::{Flow, Flows};
 use super::graph::{Graph, Item, Tree};
 use super::grow::{add_far_devices, enlarge, relieve_collapse, restart_leaves};
-use super::model::{CircuitEntry, LoadEntry, Return, Site};
+use super::model::{CircuitEntry, LoadEntry, Return};
 use super::offers::{Offers, complete, joints};
 use super::read::{Problem, Problems};
 use super::smaller::{Neighbours, explain};
+use super::system::Site;
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
 use crate::device::Supply;
@@ -256,7 +257,14 @@ fn feeding_ends(site: &Site, trees: &[Tree]) -> Vec<Feeds> {
         if feeds(&parents, &sources, &mut ends).is_err() {
             continue;
         }
+        // What leaves a source that limits itself needs no device there: its conductor bears all that it can give.
+        let limited = |node: &super::graph::Node| {
+            node.parent == 0
+                && matches!(tree.nodes.first().map(|n| n.item),
+                    Some(Item::Bank(i)) if site.banks.get(i).is_some_and(|b| !b.is_battery()))
+        };
         for (node, end) in tree.nodes.iter().zip(&ends) {
+            let end = &if limited(node) { Feeds { from: false, ..*end } } else { *end };
             if let Some(slot) = node.circuit.and_then(|c| all.get_mut(c)) {
                 *slot = if node.reversed { Feeds { from: end.to, to: end.from } } else { *end };
             }
@@ -386,6 +394,9 @@ fn judge_one(
             }
         }
     }
+    if let Some(limit) = flow.limit {
+        by_limit(&mut judgement, limit);
+    }
     if circuit.way_back == Return::Chassis(None) {
         // On an assumed return nothing is known.
         for checked in &mut judgement.checks {
@@ -413,6 +424,25 @@ fn judge_one(
         guarded_by,
         flow,
     })
+}
+
+/// A source that cannot deliver the operating current of a device: its own limit protects the conductor, or nothing
+/// does (R6).
+fn by_limit(judgement: &mut Judgement, limit: f64) {
+    let Some(ampacity) = judgement.ampacity.as_ref().map(|a| a.corrected.get::<ampere>()) else { return };
+    for checked in &mut judgement.checks {
+        if checked.check == Check::LeastFault && checked.outcome != Outcome::Passed && limit <= ampacity {
+            *checked = Checked {
+                outcome: Outcome::Passed,
+                actual: limit,
+                limit: ampacity,
+                unit: "A",
+                relation: crate::circuit::Relation::AtMost,
+                what: "greatest current of the source, which no device can see, against the conductor's capacity",
+                ..*checked
+            };
+        }
+    }
 }
 
 /// The circuit as a run of the circuit floor.

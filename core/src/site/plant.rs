@@ -6,45 +6,55 @@ use alloc::string::ToString;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
+use super::bank::cells;
+use super::check::At;
+use super::check::place::touch;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
-use super::model::{BankEntry, Site};
+use super::model::Board;
 use super::plan::{Plan, sources};
+use super::system::{BankEntry, Site};
 use crate::battery::cell_voltages;
 use crate::citation::{Citation, Seen};
 use crate::protection::Earthing;
 
-/// Highest voltage that may be touched without basic protection in dry places, V.
-const TOUCH_V: f64 = 60.0;
 /// Upper limit of extra-low voltage, DC, V.
 const EXTRA_LOW_V: f64 = 120.0;
 /// Most lugs on one stud (R8).
 const LUGS: u32 = 4;
 
+/// What a busbar must carry, A, and what of: all that its sources let pass, or all that its loads draw (R7, R8).
+pub(super) fn busbar_need(site: &Site, plan: &Plan, board: &Board) -> (f64, &'static str) {
+    let (mut fed, mut drawn) = (0.0, 0.0);
+    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+        let Some(planned) = planned else { continue };
+        if circuit.from != board.name && circuit.to != board.name {
+            continue;
+        }
+        let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
+        let current = planned.judgement.current.get::<ampere>();
+        let other = if circuit.to == board.name { &circuit.from } else { &circuit.to };
+        // A charger limits itself: no device stands for it.
+        if site.chargers.iter().any(|c| c.name == *other) {
+            fed += current;
+        } else if towards {
+            fed += planned.fitted.first().map_or(current, |f| f.guard.device.rating.get::<ampere>());
+        } else {
+            drawn += current;
+        }
+    }
+    if fed >= drawn { (fed, "the devices and sources that feed it") } else { (drawn, "its loads") }
+}
+
 /// Busbars and studs (R8).
 pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
     for board in &site.boards {
         let place = format!("board \"{}\"", board.name);
-        let mut drawn = 0.0;
-        let mut fed = 0.0;
-        for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-            let Some(planned) = planned else { continue };
-            if circuit.from != board.name && circuit.to != board.name {
-                continue;
-            }
-            let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
-            if towards {
-                fed += planned.fitted.first().map_or_else(
-                    || planned.judgement.current.get::<ampere>(),
-                    |f| f.guard.device.rating.get::<ampere>(),
-                );
-            } else {
-                drawn += planned.judgement.current.get::<ampere>();
-            }
-        }
-        let (need, what) =
-            if fed >= drawn { (fed, "the devices that feed it") } else { (drawn, "its loads") };
+        let (need, what) = busbar_need(site, plan, board);
         match board.busbar.map(|b| b.get::<ampere>()) {
+            None if board.designed => {
+                found.pass("R8", &place, &format!("busbar to be bought for at least {} A", digits(need)));
+            }
             None => found.add(
                 Severity::NotChecked,
                 "R8",
@@ -102,7 +112,11 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
                     Some(v) => (format!("inverter \"{}\"", v.name), v.line, v.least, v.greatest),
                     None => continue,
                 },
-                Item::Bank(_) | Item::Board(_) => continue,
+                Item::ConverterInput(i) => match site.converters.get(i) {
+                    Some(c) => (format!("converter \"{}\"", c.name), c.line, c.least, c.greatest),
+                    None => continue,
+                },
+                Item::Bank(_) | Item::Board(_) | Item::Charger(_) | Item::ControllerInput(_) => continue,
             };
             let highest = planned.flow.highest;
             match greatest.map(|g| g.get::<volt>()) {
@@ -185,7 +199,9 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
                 );
                 continue;
             }
-            if first.chemistry != other.chemistry {
+            if let (Some(one), Some(two)) = (first.chemistry(), other.chemistry())
+                && one != two
+            {
                 found.add(
                     Severity::Nonconforming,
                     "R15",
@@ -194,7 +210,7 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
                     other.line,
                     format!(
                         "{} beside {} of \"{}\": they neither share nor charge alike",
-                        other.chemistry, first.chemistry, first.name
+                        two, one, first.name
                     ),
                     None,
                     "join them through a converter or a selector, or use one chemistry",
@@ -219,8 +235,9 @@ fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
 
 /// What a bank states against what its cells do (R11): every voltage check rests on it.
 fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
-    let cells = bank.nominal.get::<volt>() / bank.chemistry.nominal_cell().get::<volt>();
-    let limits = cell_voltages(bank.chemistry);
+    let Some(chemistry) = bank.chemistry() else { return };
+    let cells = cells(bank, chemistry).0;
+    let limits = cell_voltages(chemistry);
     let (highest, cut_off) = (bank.highest.get::<volt>() / cells, bank.cut_off.get::<volt>() / cells);
     if highest < limits.charge_V {
         found.add(
@@ -269,7 +286,7 @@ fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
                 format!(
                     "short_circuit {} A stands beside a resistance that gives {} A",
                     digits(amps.get::<ampere>()),
-                    digits(crate::circuit::bound(by_resistance))
+                    digits(crate::circuit::upper_bound(by_resistance))
                 ),
                 None,
                 "state the one that the maker gives or that was measured",
@@ -280,7 +297,7 @@ fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
 
 /// Banks: discharge limit, touch voltage, what is known of the fault current.
 pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
-    for (index, bank) in site.banks.iter().enumerate() {
+    for (index, bank) in site.banks.iter().enumerate().filter(|(_, bank)| bank.is_battery()) {
         let place = format!("bank \"{}\"", bank.name);
         let drawn: f64 = site
             .circuits
@@ -290,7 +307,8 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
             .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
             .sum();
         plausible(bank, &place, found);
-        if bank.strings > 2 {
+        let is_told = bank.part.as_ref().is_some_and(|p| p.designed || p.take_off.is_some());
+        if bank.strings > 2 && !is_told && !site.is_whole {
             found.add(
                 Severity::NotChecked,
                 "R15",
@@ -367,23 +385,7 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
                 "",
             );
         }
-        if highest > TOUCH_V {
-            found.add(
-                Severity::NotChecked,
-                "R19",
-                "touch-protection",
-                place.clone(),
-                bank.line,
-                format!(
-                    "the bank reaches {} V, above {} V: protection against touch is not described in \
-                     the document",
-                    digits(highest),
-                    digits(TOUCH_V)
-                ),
-                Some(Citation::new("IEC 60364-4-41:2005", "extra-low voltage limits", Seen::Page)),
-                "cover live parts and mark them",
-            );
-        }
+        touch(site, highest, None, &mut At::new(found, place.clone(), bank.line));
         let known = sources(site);
         if known.get(index).is_some_and(|e| e.by_thumb) {
             found.add(

@@ -6,8 +6,8 @@ use alloc::vec::Vec;
 use uom::si::electric_current::ampere;
 
 use super::graph::{Item, Tree};
-use super::model::Site;
 use super::plan::Planned;
+use super::system::Site;
 
 /// What all devices of a side together let pass towards each circuit, A: infinite where a source is not guarded.
 pub(super) struct Reach {

@@ -1,18 +1,32 @@
 //! Reads a site file: every problem with its line and its remedy, not the first only.
 //!
 //! The text becomes a tree of spans ([`syntax`]), each section is walked against its declared keys
-//! ([`keys`], [`entry`]), and what stands between sections is checked last ([`ends`]).
+//! ([`keys`], [`plant_keys`], [`sections`], [`entry`]), and what stands between sections is checked by itself ([`ends`],
+//! [`reach`], [`fed`], [`references`]), so that no slip in one place hides another.
 
+mod bank;
 mod circuits;
 mod ends;
 mod entry;
 mod equipment;
+mod fed;
 mod keys;
 mod log;
+mod meant;
+mod modules;
+mod nodes;
+mod plant;
+mod plant_keys;
+mod reach;
+mod references;
+mod sections;
+mod sources;
 mod stock;
+mod surroundings;
 mod syntax;
 #[cfg(test)]
 mod tests;
+mod times;
 mod values;
 mod ways;
 mod whole;
@@ -23,7 +37,7 @@ use alloc::vec;
 use alloc::vec::Vec;
 use core::fmt;
 
-use super::model::Site;
+use super::model::Document;
 
 /// Largest text that is read, in bytes: 8 MiB.
 const MOST_BYTES: usize = 8 * 1024 * 1024;
@@ -93,7 +107,7 @@ impl core::error::Error for Problems {}
 /// let problems = ampwright::site::read("format = 1\n[site]\nnmae = 'Heron Point'\n").unwrap_err();
 /// assert!(problems.to_string().contains("line 3, [site]: no key 'nmae'; did you mean 'name'?"));
 /// ```
-pub fn read(text: &str) -> Result<Site, Problems> {
+pub fn read(text: &str) -> Result<Document, Problems> {
     if text.len() > MOST_BYTES {
         return Err(refused(format!(
             "the file has {} bytes; at most {MOST_BYTES} are read: a site file lists circuits, not measurements",
@@ -113,7 +127,7 @@ pub fn read(text: &str) -> Result<Site, Problems> {
 /// let problems = ampwright::site::read_bytes(b"format = 1\n\xff").unwrap_err();
 /// assert!(problems.to_string().starts_with("not a text file: byte 12 is not UTF-8"));
 /// ```
-pub fn read_bytes(bytes: &[u8]) -> Result<Site, Problems> {
+pub fn read_bytes(bytes: &[u8]) -> Result<Document, Problems> {
     // The size first: nothing is gained by looking through the bytes of a disk image.
     if bytes.len() > MOST_BYTES {
         return Err(refused(format!(

@@ -1,21 +1,25 @@
 //! The report as data: what was found and designed, with its reasons. [`super::text`] turns it into words.
 
-use alloc::collections::BTreeMap;
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
 
 use uom::si::electric_potential::volt;
-use uom::si::length::meter;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
+use super::complete::complete;
+use super::describe::{self, PlantLines};
+use super::energy::demands;
 use super::fault::Fault;
 use super::finding::{Finding, Severity, digits};
-use super::model::{CircuitEntry, Return, Site};
+use super::model::{CircuitEntry, Document, Return};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
-use super::wiring::{findings, name_of, stud_of};
-use crate::cable::{Conductor, Stud};
+use super::sheet::{Label, MaintenanceTask, Meter, Purchase, Step, SwitchingStep, paper, purchases};
+use super::system::Site;
+use super::wiring::findings;
+use crate::battery::Chemistry;
+use crate::cable::Conductor;
 use crate::circuit::{Judgement, Run};
 use crate::citation::Seen;
 use crate::protection::{Earthing, End, Guard, Pole};
@@ -86,23 +90,6 @@ pub struct CircuitLine {
     pub practice: Option<String>,
 }
 
-/// One line of what to buy.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Purchase {
-    /// How much: metres of single conductor, or pieces.
-    pub amount: f64,
-    /// `m` or `pcs`.
-    pub unit: &'static str,
-    /// What.
-    pub what: String,
-    /// Where it goes.
-    pub places: Vec<String>,
-    /// Price of all of it, where the stock states one.
-    pub price: Option<f64>,
-    /// What lies on the shelf of it, where the stock says so.
-    pub shelf: Option<f64>,
-}
-
 /// The whole report.
 #[derive(Clone, Debug)]
 pub struct Report {
@@ -114,14 +101,28 @@ pub struct Report {
     pub overrides: Vec<String>,
     /// Banks and surroundings, one line each.
     pub system: Vec<String>,
+    /// Banks, energy, arrays, inverters, sources; empty where only wiring is described.
+    pub plant: PlantLines,
     /// Circuits, in the order of the document.
     pub circuits: Vec<CircuitLine>,
     /// Findings, gravest first.
     pub findings: Vec<Finding>,
+    /// What meters showed beside what is predicted, in the order of the document.
+    pub readings: Vec<super::reading::ReadingLine>,
     /// What passed on boards, parts, lugs and consumers; the checks of single runs stand with their circuits.
     pub passed: Vec<String>,
     /// What to buy for what was designed.
     pub purchases: Vec<Purchase>,
+    /// The meter whose errors the commissioning sheet counts with.
+    pub meter: Meter,
+    /// Commissioning sheet, in working order.
+    pub commissioning: Vec<Step>,
+    /// Switching order: connecting, then disconnecting.
+    pub switching: Vec<SwitchingStep>,
+    /// Labels.
+    pub labels: Vec<Label>,
+    /// Maintenance, the most frequent first.
+    pub maintenance: Vec<MaintenanceTask>,
     /// What was taken where the document says nothing.
     pub assumptions: Vec<String>,
     /// Sources of which nobody has seen the page.
@@ -155,7 +156,9 @@ impl Report {
 /// assert!(report.to_string().contains("bank main"));
 /// # Ok::<(), String>(())
 /// ```
-pub fn inspect(site: &Site) -> Result<Report, Problems> {
+pub fn inspect(document: &Document) -> Result<Report, Problems> {
+    let (site, reasons) = complete(document)?;
+    let site = &site;
     let plan = plan(site)?;
     let circuits: Vec<CircuitLine> = site
         .circuits
@@ -166,16 +169,33 @@ pub fn inspect(site: &Site) -> Result<Report, Problems> {
             Some(line_of(site, &plan, index, circuit, planned.as_ref()?))
         })
         .collect();
-    let found = findings(site, &plan);
+    let demands = demands(site).unwrap_or_default();
+    let mut found = findings(site, &plan, &demands);
+    let plant = describe::plant(site, &demands, &reasons);
+    let paper = paper(site, &plan);
+    let readings = super::reading::readings(site, &plan, &mut found);
+    found.list.sort_by_key(|f| f.severity);
     Ok(Report {
+        plant,
         name: site.name.clone(),
         edition: site.rules.set().edition.to_string(),
         overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
         system: system(site),
         findings: found.list,
+        readings,
         passed: found.passed,
         purchases: purchases(site, &plan),
-        assumptions: assumptions(site, &plan),
+        meter: paper.meter,
+        commissioning: paper.commissioning,
+        switching: paper.switching,
+        labels: paper.labels,
+        maintenance: paper.maintenance,
+        assumptions: {
+            let mut lines = reasons.assumed;
+            lines.extend(assumptions(site, &plan));
+            lines.extend(plant_assumptions(site));
+            lines
+        },
         recalled: recalled(&circuits),
         not_covered: not_covered(site),
         circuits,
@@ -272,11 +292,12 @@ fn system(site: &Site) -> Vec<String> {
     let mut lines: Vec<String> = site
         .banks
         .iter()
+        .filter(|b| b.is_battery())
         .map(|b| {
             format!(
                 "bank \"{}\": {} {} V, {} Ah, from {} V at cut-off to {} V at its highest",
                 b.name,
-                b.chemistry,
+                b.chemistry().map_or("", Chemistry::word),
                 digits(b.nominal.get::<volt>()),
                 digits(b.capacity.get::<uom::si::electric_charge::ampere_hour>()),
                 digits(b.cut_off.get::<volt>()),
@@ -286,9 +307,9 @@ fn system(site: &Site) -> Vec<String> {
         .collect();
     let earth = site.rules.set().terms.earth;
     lines.push(match site.earthing {
-        super::model::Earthing::Negative => format!("negative pole to {earth} at one point"),
-        super::model::Earthing::Positive => format!("positive pole to {earth} at one point"),
-        super::model::Earthing::Floating => format!("neither pole to {earth}"),
+        Earthing::Negative => format!("negative pole to {earth} at one point"),
+        Earthing::Positive => format!("positive pole to {earth} at one point"),
+        Earthing::Floating => format!("neither pole to {earth}"),
     });
     lines.push(format!(
         "ambient {} to {} °C",
@@ -296,99 +317,6 @@ fn system(site: &Site) -> Vec<String> {
         digits(site.ambient.1.get::<degree_celsius>())
     ));
     lines
-}
-
-/// What to buy for what was designed: conductor by the metre, devices by the piece.
-fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
-    let mut list: Vec<Purchase> = Vec::new();
-    let mut add = |amount: f64,
-                   unit: &'static str,
-                   what: String,
-                   place: &str,
-                   each: Option<f64>,
-                   shelf: Option<f64>| {
-        let price = each.map(|p| p * amount);
-        match list.iter_mut().find(|p| p.what == what && p.unit == unit) {
-            Some(line) => {
-                line.amount += amount;
-                if line.places.last().is_none_or(|last| last != place) {
-                    line.places.push(place.to_string());
-                }
-                line.price = line.price.zip(price).map(|(a, b)| a + b);
-            }
-            None => list.push(Purchase {
-                amount,
-                unit,
-                what,
-                places: alloc::vec![place.to_string()],
-                price,
-                shelf,
-            }),
-        }
-    };
-    let items = plan.trees.iter().flat_map(|t| t.nodes.iter().map(|n| n.item));
-    let studs: BTreeMap<&str, Stud> =
-        items.filter_map(|item| Some((name_of(site, item), stud_of(site, item)?))).collect();
-    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-        let Some(planned) = planned else { continue };
-        if planned.designed() {
-            let metres = circuit.positive_length.get::<meter>() + circuit.negative_length.get::<meter>();
-            let stock = site
-                .stock
-                .cables
-                .iter()
-                .find(|c| c.size == planned.positive.size && c.insulation == planned.positive.insulation);
-            add(
-                metres,
-                "m",
-                super::text::conductor_words(&planned.positive),
-                &circuit.name,
-                stock.and_then(|c| c.price),
-                stock.and_then(|c| c.length).map(|l| l.get::<meter>()),
-            );
-        }
-        for fitted in planned.fitted.iter().filter(|f| f.designed) {
-            let device = fitted.guard.device;
-            let price = site
-                .stock
-                .devices
-                .iter()
-                .find(|d| d.family == device.family && d.ratings.contains(&device.rating))
-                .and_then(|d| d.price);
-            // One in every unearthed pole (R7).
-            let pieces = f64::from(if site.earthing == Earthing::Floating { 2_u8 } else { 1 });
-            add(
-                pieces,
-                "pcs",
-                super::text::device_words(&fitted.guard, fitted.specified),
-                &circuit.name,
-                price,
-                None,
-            );
-        }
-        if planned.designed() {
-            for (name, lug) in [(&circuit.from, circuit.from_lug), (&circuit.to, circuit.to_lug)] {
-                let stud = studs.get(name.as_str()).copied();
-                if let Some(stud) = lug.or(stud) {
-                    let price = site
-                        .stock
-                        .lugs
-                        .iter()
-                        .find(|l| l.size == planned.positive.size && l.stud == stud)
-                        .and_then(|l| l.price);
-                    add(
-                        2.0,
-                        "pcs",
-                        format!("lug {} for {}", stud, planned.positive.size),
-                        &circuit.name,
-                        price,
-                        None,
-                    );
-                }
-            }
-        }
-    }
-    list
 }
 
 fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
@@ -416,7 +344,8 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
             .to_string(),
     );
     lines.push(
-        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), metal of full area at the lowest ambient, \
+        "greatest fault: every bank full and warm (2.2 V a lead-acid cell), or just charged at its highest voltage where that is \
+         more, metal of full area at the lowest ambient, \
          no joints; least fault: one bank alone, empty (1.98 V a lead-acid cell), its resistance raised for \
          discharge, cold and age (4.5 times lead-acid, 9 times lithium, 3.4 times nickel-cadmium; common practice), \
          conductors at their rated temperature, joints in"
@@ -475,6 +404,46 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
     lines
 }
 
+/// What was taken of the plant where the document says nothing.
+fn plant_assumptions(site: &Site) -> Vec<String> {
+    let mut lines = Vec::new();
+    if !site.is_whole {
+        return lines;
+    }
+    if site.place.losses.is_none() {
+        lines.push(format!(
+            "{} % of energy lost in the wiring (common practice, no source; state losses)",
+            digits(100.0 * super::energy::WIRING_LOSS)
+        ));
+    }
+    if site.inverters.iter().any(|i| i.idle.is_some()) {
+        lines.push(
+            "inverters on day and night in every month in which one of their loads may run, off in the others"
+                .to_string(),
+        );
+    }
+    if site.loads.iter().any(|l| l.use_of.duty_hot.is_some()) {
+        lines.push(
+            "duty of a load as stated at 20 °C, duty_hot at the greatest ambient, in a straight line between"
+                .to_string(),
+        );
+    }
+    if !site.arrays.is_empty() {
+        lines.push(format!(
+            "arrays: {} % lost to dirt, mismatch and wiring; 3 % of voltage to wiring and 5 % to age; cells of a mean day in \
+             800 W/m², hottest in 1000 W/m²; controllers let nothing back into the array (common practice, no source)",
+            digits(100.0 * super::supply::ARRAY_LOSS)
+        ));
+    }
+    if site.chargers.iter().any(|c| c.limit.is_some()) {
+        lines.push(
+            "sources load their circuits, and what lies between them and the bank, with all that their outputs give"
+                .to_string(),
+        );
+    }
+    lines
+}
+
 /// Sources used that nobody has seen.
 fn recalled(circuits: &[CircuitLine]) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
@@ -498,11 +467,13 @@ fn not_covered(site: &Site) -> Vec<String> {
     let mut lines = Vec::new();
     for inverter in &site.inverters {
         lines.push(format!("everything beyond the AC terminals of inverter \"{}\"", inverter.name));
-        let surge = if inverter.surge.is_some() { "" } else { "surge (not stated), " };
-        lines.push(format!(
-            "{surge}inrush and pre-charge of inverter \"{}\", and its idle draw",
-            inverter.name
-        ));
+        if !site.is_whole {
+            let surge = if inverter.surge.is_some() { "" } else { "surge (not stated), " };
+            lines.push(format!(
+                "{surge}inrush and pre-charge of inverter \"{}\", and its idle draw",
+                inverter.name
+            ));
+        }
     }
     let open: Vec<&str> = site
         .circuits
@@ -518,10 +489,20 @@ fn not_covered(site: &Site) -> Vec<String> {
         ));
     }
     lines.push("loads and inverters that can feed back: every one is taken for a load only".to_string());
-    lines.push(
-        "size of bank and array, charging, ventilation, lightning and protective conductors: not \
-             part of this report"
-            .to_string(),
-    );
+    if site.is_whole {
+        lines.extend(
+            [
+                "weather from hour to hour, the loss of load over years, ageing: mean days of the months only",
+                "foundations, wind and snow loads, fire, and what a building or boat asks beyond its wiring",
+            ]
+            .map(ToString::to_string),
+        );
+    } else {
+        lines.push(
+            "only wiring is described: size of bank and array, charging, ventilation, lightning and protective \
+             conductors are not part of this report"
+                .to_string(),
+        );
+    }
     lines
 }

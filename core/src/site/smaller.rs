@@ -9,9 +9,9 @@ use alloc::vec::Vec;
 use uom::si::electric_potential::volt;
 
 use super::flow::Flows;
-use super::model::Site;
 use super::offers::Offers;
 use super::plan::{Draft, Planned, Reason, Refused};
+use super::system::Site;
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Outcome, Relation, judge};
 use crate::quantity::ElectricPotential;

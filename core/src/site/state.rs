@@ -11,7 +11,8 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 
 use super::graph::{Item, Node, Tree};
-use super::model::{LoadKind, Site};
+use super::model::LoadKind;
+use super::system::Site;
 use crate::error::Error;
 use crate::network::{NodeLoad, NodeState, Source, TreeNode, solve};
 use crate::quantity::{ElectricCurrent, ElectricPotential, ElectricalResistance, Power};
@@ -56,12 +57,17 @@ fn nominal_watts(site: &Site, item: Item, nominal: f64) -> f64 {
             .inverters
             .get(i)
             .map_or(0.0, |inverter| inverter.power.get::<watt>() / inverter.efficiency.get::<ratio>()),
-        Item::Bank(_) | Item::Board(_) => 0.0,
+        // It draws most while it gives all it may.
+        Item::ConverterInput(i) => site.converters.get(i).map_or(0.0, |c| {
+            let idle = c.idle.map_or(0.0, |p| p.get::<watt>());
+            (c.output * c.limit).get::<watt>() / c.efficiency.get::<ratio>() + idle
+        }),
+        Item::Bank(_) | Item::Board(_) | Item::Charger(_) | Item::ControllerInput(_) => 0.0,
     }
 }
 
 /// Loads of an item as the network sees them. `as_current`: constant powers as the currents they draw at `at`.
-fn node_load(
+pub(super) fn node_load(
     site: &Site,
     item: Item,
     nominal: ElectricPotential,
@@ -90,6 +96,8 @@ pub(super) struct Solver<'a, F> {
     pub nominal: ElectricPotential,
     /// Loop resistance of each circuit, ohm.
     pub ohms: &'a F,
+    /// Loads that do not run in this state, by place; none where it is empty.
+    pub off: &'a [bool],
 }
 
 fn run(nodes: &[TreeNode], emf: ElectricPotential) -> Result<Vec<NodeState>, Error> {
@@ -120,9 +128,18 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         run(&nodes, emf)
     }
 
+    /// Whether an item is a load that does not run.
+    fn is_off(&self, item: Item) -> bool {
+        matches!(item, Item::Load(i) if self.off.get(i).copied().unwrap_or(false))
+    }
+
     fn nodes(&self, tree: &Tree, as_current: Option<ElectricPotential>) -> Vec<TreeNode> {
         let node = |n: &Node| {
-            let mut load = node_load(self.site, n.item, self.nominal, as_current);
+            let mut load = if self.is_off(n.item) {
+                NodeLoad { reference: self.nominal, ..NodeLoad::default() }
+            } else {
+                node_load(self.site, n.item, self.nominal, as_current)
+            };
             if let Some(&amps) = self.drawn.get(&n.item) {
                 load.current += ElectricCurrent::new::<ampere>(amps);
             }
@@ -140,6 +157,9 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
     /// inverter its surge.
     fn started(&self, tree: &Tree, index: usize, emf: f64) -> Option<(f64, f64)> {
         let node = tree.nodes.get(index)?;
+        if self.is_off(node.item) {
+            return None;
+        }
         let mut load = node_load(self.site, node.item, self.nominal, None);
         match node.item {
             Item::Load(i) => {
@@ -154,7 +174,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 let inverter = self.site.inverters.get(i)?;
                 load.power = inverter.surge? / inverter.efficiency;
             }
-            Item::Bank(_) | Item::Board(_) => return None,
+            _ => return None,
         }
         if let Some(&amps) = self.drawn.get(&node.item) {
             load.current += ElectricCurrent::new::<ampere>(amps);
@@ -172,7 +192,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         let site = self.site;
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
-        let starts = starts(site, tree, solved);
+        let starts = starts(self, tree, solved);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         let mut states = Vec::with_capacity(tree.nodes.len());
         for (index, node) in tree.nodes.iter().enumerate() {
@@ -216,7 +236,7 @@ fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
             let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
             Some((surge - amps).max(0.0))
         }
-        Item::Bank(_) | Item::Board(_) => None,
+        _ => None,
     }
 }
 
@@ -231,8 +251,8 @@ fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
                 let count = site.loads.get(i).map_or(1, |l| l.count.max(1));
                 state.current.get::<ampere>() / f64::from(count)
             }
-            Item::Inverter(_) => state.current.get::<ampere>(),
-            Item::Bank(_) | Item::Board(_) => 0.0,
+            Item::Inverter(_) | Item::ConverterInput(_) => state.current.get::<ampere>(),
+            _ => 0.0,
         })
         .collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
@@ -245,12 +265,19 @@ fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
 }
 
 /// The largest start or surge at each node or behind it, A on top: one at a time (R16).
-fn starts(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<Option<f64>> {
+fn starts<F: Fn(usize) -> f64>(
+    solver: &Solver<'_, F>,
+    tree: &Tree,
+    states: &[NodeState],
+) -> Vec<Option<f64>> {
     let mut largest: Vec<Option<f64>> = tree
         .nodes
         .iter()
         .zip(states)
-        .map(|(n, s)| start(site, n.item, libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>()))
+        .map(|(n, s)| {
+            let (amps, volts) = (libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>());
+            if solver.is_off(n.item) { None } else { start(solver.site, n.item, amps, volts) }
+        })
         .collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
         let own = largest.get(index).copied().flatten();
@@ -278,7 +305,7 @@ fn continuous_currents(
                 Item::Load(i) if site.loads.get(i).is_some_and(|l| l.continuous) => {
                     state.current.get::<ampere>()
                 }
-                Item::Inverter(_) => state.current.get::<ampere>(),
+                Item::Inverter(_) | Item::ConverterInput(_) => state.current.get::<ampere>(),
                 _ => 0.0,
             };
             own + drawn.get(&node.item).copied().unwrap_or(0.0)

@@ -15,7 +15,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::finding::{Severity, digits};
 use super::report::{CircuitLine, Report};
 use crate::cable::{Class, Coating, Conductor, Material};
-use crate::circuit::{Outcome, bound};
+use crate::circuit::{Outcome, lower_bound, upper_bound};
 use crate::citation::Seen;
 use crate::device::{Polarity, Supply};
 use crate::protection::{Guard, Pole};
@@ -40,15 +40,17 @@ impl fmt::Display for Report {
         for line in &self.system {
             writeln!(f, "{}", printable(line))?;
         }
+        super::plant_text::print(&self.plant, f)?;
         self.summary(f)?;
         self.found(f)?;
+        super::reading::section(&self.readings, f)?;
         heading(f, "Circuits in detail")?;
         for (number, circuit) in self.circuits.iter().enumerate() {
             writeln!(f)?;
             detail(f, number + 1, circuit)?;
         }
         list(f, "Passed on boards, parts, lugs and consumers", &self.passed)?;
-        self.bought(f)?;
+        super::sheet::text::print(self, f)?;
         list(f, "Taken where the document says nothing", &self.assumptions)?;
         list(
             f,
@@ -108,23 +110,6 @@ impl Report {
                 last = Some(finding.severity);
             }
             writeln!(f, "    {}", printable(&finding.to_string()))?;
-        }
-        Ok(())
-    }
-
-    fn bought(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if self.purchases.is_empty() {
-            return Ok(());
-        }
-        heading(f, "To buy (lengths without cutting allowance)")?;
-        for p in &self.purchases {
-            let price = p.price.map_or_else(String::new, |x| format!("  {x:.2}"));
-            let places = p.places.iter().map(|s| printable(s)).collect::<alloc::vec::Vec<_>>().join(", ");
-            let shelf = match p.shelf {
-                Some(held) if held < p.amount => format!("  (only {} {} on the shelf)", digits(held), p.unit),
-                _ => String::new(),
-            };
-            writeln!(f, "  {:>7} {:<4} {}: {places}{price}{shelf}", digits(p.amount), p.unit, p.what)?;
         }
         Ok(())
     }
@@ -190,7 +175,7 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     for d in &c.devices {
         let fault = d.greatest_fault.map_or_else(
             || "greatest fault current not known".to_string(),
-            |a| format!("greatest fault current {} A", rounded(a.get::<ampere>())),
+            |a| format!("greatest fault current {} A", digits(upper_bound(a.get::<ampere>()))),
         );
         row(
             f,
@@ -226,7 +211,7 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
     let least = devices
         .chain(j.least_fault)
         .reduce(|a, b| if b < a { b } else { a })
-        .map_or_else(|| "not known".to_string(), |a| format!("{} A", rounded(a.get::<ampere>())));
+        .map_or_else(|| "not known".to_string(), |a| format!("{} A", digits(lower_bound(a.get::<ampere>()))));
     row(
         f,
         "loop",
@@ -324,7 +309,7 @@ pub(super) const fn is_of_device(check: Check) -> bool {
     )
 }
 
-fn heading(f: &mut fmt::Formatter<'_>, text: &str) -> fmt::Result {
+pub(super) fn heading(f: &mut fmt::Formatter<'_>, text: &str) -> fmt::Result {
     writeln!(f, "\n{text}")
 }
 
@@ -339,18 +324,13 @@ fn list(f: &mut fmt::Formatter<'_>, head: &str, lines: &[String]) -> fmt::Result
     Ok(())
 }
 
-/// Fault currents are bounds: two figures are as many as are honest.
-fn rounded(amps: f64) -> String {
-    digits(bound(amps))
-}
-
 /// Names come from a file: control characters must not reach a terminal.
-fn printable(text: &str) -> String {
+pub(super) fn printable(text: &str) -> String {
     text.chars().map(|c| if c.is_control() { '\u{fffd}' } else { c }).collect()
 }
 
 /// Cuts to a number of characters.
-fn short(text: &str, most: usize) -> String {
+pub(super) fn short(text: &str, most: usize) -> String {
     if text.chars().count() <= most {
         return text.to_string();
     }

@@ -9,24 +9,26 @@ use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::length::meter;
 
+use super::check;
 use super::finding::{Findings, Severity, digits, of_check};
 use super::graph::{Item, Tree};
-use super::model::{CircuitEntry, Return, Site};
+use super::joints::joints;
+use super::model::{CircuitEntry, Return};
+use super::overrides::overrides;
 use super::plan::{Fitted, Plan, Planned};
 use super::plant::{banks, boards, consumers};
 use super::reach::Reach;
-use crate::cable::{Stud, joint_resistance, lug_fits};
+use super::system::Site;
+use super::trust::{chassis, cooler, diversity, let_through};
+use crate::cable::{Stud, lug_fits};
 use crate::circuit::{Demand, Judgement, Outcome, Run, capacity, judge};
 use crate::device::{Polarity, Supply};
 use crate::protection::{End, Pole, PoleFault, pole_fault};
 use crate::quantity::ElectricCurrent;
 use crate::rules::Key;
 
-/// Heat of one joint that deserves a look, W: common practice, no source.
-const JOINT_W: f64 = 5.0;
-
 /// All findings of a plan, gravest first, in the order of the document within.
-pub(super) fn findings(site: &Site, plan: &Plan) -> Findings {
+pub(super) fn findings(site: &Site, plan: &Plan, demands: &[super::energy::Demand]) -> Findings {
     let mut found = Findings::default();
     let reach = Reach::new(site, &plan.trees, &plan.circuits);
     let ends = ends(&plan.trees, site.circuits.len());
@@ -41,7 +43,9 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Findings {
         at.way_back(&mut found);
         at.parts(&mut found);
         at.lugs(&mut found);
-        at.joints(&mut found);
+        joints(circuit, &at.place(), planned.judgement.current, at.starts_engine(), &mut found);
+        cooler(site, circuit, planned, &mut found);
+        chassis(site, circuit, planned, &mut found);
         at.sized_at_nominal(&mut found);
         if plan.collapsed.contains(&index) {
             found.add(
@@ -58,9 +62,12 @@ pub(super) fn findings(site: &Site, plan: &Plan) -> Findings {
             );
         }
     }
+    diversity(site, plan, &mut found);
+    overrides(site, plan, &mut found);
     boards(site, plan, &mut found);
     consumers(site, plan, &mut found);
     banks(site, plan, &mut found);
+    check::plant(site, plan, demands, &mut found);
     found.list.sort_by_key(|f| f.severity);
     found
 }
@@ -99,13 +106,17 @@ impl Place<'_> {
         (format!("circuit \"{}\", {}", self.circuit.name, fitted.name), line)
     }
 
-    /// Conductors of engine starting: exempt from devices under craft rules (R7).
-    fn is_exempt(&self) -> bool {
+    fn starts_engine(&self) -> bool {
         let load = match self.child {
             Some(Item::Load(i)) => self.site.loads.get(i),
             _ => None,
         };
-        self.circuit.starts_engine(load) && self.site.rules.exempts_cranking()
+        self.circuit.starts_engine(load)
+    }
+
+    /// Conductors of engine starting: exempt from devices under craft rules (R7).
+    fn is_exempt(&self) -> bool {
+        self.starts_engine() && self.site.rules.exempts_cranking()
     }
 
     /// The checks of the run itself.
@@ -166,6 +177,7 @@ impl Place<'_> {
     fn devices(&self, found: &mut Findings) {
         for fitted in &self.planned.fitted {
             let (place, line) = self.of_device(fitted);
+            let_through(fitted, &place, line, found);
             let entry = fitted.entry.and_then(|e| self.circuit.devices.get(e));
             // A device that is designed goes into every unearthed pole; single ones at one end add up.
             if let Some(entry) = entry {
@@ -499,32 +511,6 @@ impl Place<'_> {
         }
     }
 
-    /// Heat in single joints (R9).
-    fn joints(&self, found: &mut Findings) {
-        let amps = self.planned.judgement.current.get::<ampere>();
-        for joint in &self.circuit.joints {
-            let each = joint.resistance.unwrap_or_else(|| joint_resistance(joint.kind));
-            let heat = amps * amps * each.value;
-            if heat > JOINT_W {
-                found.add(
-                    Severity::Advice,
-                    "R9",
-                    "joint-heat",
-                    self.place(),
-                    self.circuit.line,
-                    format!(
-                        "a joint of {} mΩ turns {} W into heat at {} A; no fuse sees that",
-                        digits(each.value * 1e3),
-                        digits(heat),
-                        digits(amps)
-                    ),
-                    None,
-                    "remake the joint, and measure it under load",
-                );
-            }
-        }
-    }
-
     /// An inverter's feed that would do for its power over nominal voltage, but not in the worst hour (R3).
     fn sized_at_nominal(&self, found: &mut Findings) {
         use crate::rules::Check::{Ampacity, DeviceCarries, TerminalColumn};
@@ -569,6 +555,9 @@ pub(super) fn name_of(site: &Site, item: Item) -> &str {
         Item::Board(i) => site.boards.get(i).map(|x| x.name.as_str()),
         Item::Load(i) => site.loads.get(i).map(|x| x.name.as_str()),
         Item::Inverter(i) => site.inverters.get(i).map(|x| x.name.as_str()),
+        Item::Charger(i) => site.chargers.get(i).map(|x| x.name.as_str()),
+        Item::ControllerInput(i) => site.controllers.get(i).map(|x| x.name.as_str()),
+        Item::ConverterInput(i) => site.converters.get(i).map(|x| x.name.as_str()),
     }
     .unwrap_or("")
 }
@@ -580,5 +569,8 @@ pub(super) fn stud_of(site: &Site, item: Item) -> Option<Stud> {
         Item::Board(i) => site.boards.get(i)?.stud,
         Item::Load(i) => site.loads.get(i)?.stud,
         Item::Inverter(i) => site.inverters.get(i)?.stud,
+        Item::Charger(i) => site.chargers.get(i)?.stud,
+        Item::ControllerInput(i) => site.controllers.get(i)?.stud,
+        Item::ConverterInput(i) => site.converters.get(i)?.stud,
     }
 }

@@ -1,89 +1,33 @@
-//! Banks, boards, inverters and loads.
+//! Boards and loads.
 
 use alloc::borrow::ToOwned;
 use alloc::format;
 
 use super::entry::Entry;
 use super::keys::{
-    BUSBAR, CAPACITY, CHEMISTRY, CONTINUOUS, COUNT, CURRENT, CUT_OFF, EFFICIENCY, GREATEST,
-    GREATEST_DISCHARGE, HIGHEST, IDLE, INTERNAL, LEAST, LOAD_KIND, LOAD_KIND_WORDS, LUGS_ON_STUD, NOMINAL,
-    POWER, SHORT_CIRCUIT, START, STRINGS, STUD, SURGE, TERMINAL, USE, USE_WORDS,
+    BUSBAR, CONTINUOUS, COUNT, CURRENT, GREATEST, Key, LEAST, LOAD_KIND, LOAD_KIND_WORDS, LUGS_ON_STUD,
+    POWER, START, STUD, TERMINAL, USE, USE_WORDS,
 };
-use crate::quantity::{ElectricPotential, Power};
+use super::plant::named;
+use super::plant_keys::{
+    AC, BOARD_NAME, INVERTER_NAME, PAST_DISCONNECT, POWER_FACTOR, PRIORITY, ROUTE, START_POWER,
+};
+use super::times::{is_standing, use_of};
+use crate::quantity::ElectricPotential;
 use crate::rules::LoadUse;
-use crate::site::model::{BankEntry, Board, InverterEntry, LoadEntry, LoadKind};
+use crate::site::model::{Board, LoadEntry, LoadKind};
 
-pub(super) fn bank(entry: &mut Entry<'_, '_>) -> Option<BankEntry> {
-    let name = entry.name();
-    let chemistry = entry.parsed(&CHEMISTRY);
-    let nominal: Option<ElectricPotential> = entry.quantity(&NOMINAL);
-    let capacity = entry.quantity(&CAPACITY);
-    let strings = entry.count(&STRINGS);
-    let cut_off: Option<ElectricPotential> = entry.quantity(&CUT_OFF);
-    let highest: Option<ElectricPotential> = entry.quantity(&HIGHEST);
-    let short_circuit = entry.quantity(&SHORT_CIRCUIT);
-    let internal_resistance = entry.quantity(&INTERNAL);
-    let greatest_discharge = entry.quantity(&GREATEST_DISCHARGE);
-    let stud = entry.parsed(&STUD);
-
-    entry.ordered(&CUT_OFF, cut_off, &NOMINAL, nominal);
-    entry.ordered(&NOMINAL, nominal, &HIGHEST, highest);
-    if nominal.is_none() {
-        entry.ordered(&CUT_OFF, cut_off, &HIGHEST, highest);
-    }
-    if cut_off.is_some() && cut_off == highest && nominal == highest {
-        let sentence =
-            format!("{} is also the highest voltage; the cut-off must be below", entry.written(&CUT_OFF));
-        entry.problem(&CUT_OFF, sentence);
-    }
-    Some(BankEntry {
-        name: name?,
-        line: entry.line(),
-        chemistry: chemistry?,
-        nominal: nominal?,
-        capacity: capacity?,
-        strings: strings.unwrap_or(1),
-        cut_off: cut_off?,
-        highest: highest?,
-        short_circuit,
-        internal_resistance,
-        greatest_discharge,
-        stud,
-    })
-}
+/// Keys of loads on DC, and of AC loads.
+const DC_ONLY: &[&Key] =
+    &[&CURRENT, &START, &LEAST, &GREATEST, &STUD, &TERMINAL, &PAST_DISCONNECT, &BOARD_NAME, &ROUTE];
+const AC_ONLY: &[&Key] = &[&START_POWER, &POWER_FACTOR, &INVERTER_NAME];
 
 pub(super) fn board(entry: &mut Entry<'_, '_>) -> Option<Board> {
     let name = entry.name();
     let busbar = entry.quantity(&BUSBAR);
     let stud = entry.parsed(&STUD);
     let lugs_on_stud = entry.count(&LUGS_ON_STUD);
-    Some(Board { name: name?, line: entry.line(), busbar, stud, lugs_on_stud })
-}
-
-pub(super) fn inverter(entry: &mut Entry<'_, '_>) -> Option<InverterEntry> {
-    let name = entry.name();
-    let power: Option<Power> = entry.quantity(&POWER);
-    let surge: Option<Power> = entry.quantity(&SURGE);
-    let efficiency = entry.quantity(&EFFICIENCY);
-    let idle: Option<Power> = entry.quantity(&IDLE);
-    let (least, greatest) = supply_range(entry);
-    let stud = entry.parsed(&STUD);
-    let terminal = entry.quantity(&TERMINAL);
-
-    entry.ordered(&POWER, power, &SURGE, surge);
-    entry.ordered(&IDLE, idle, &POWER, power);
-    Some(InverterEntry {
-        name: name?,
-        line: entry.line(),
-        power: power?,
-        surge,
-        efficiency: efficiency?,
-        idle,
-        least,
-        greatest,
-        stud,
-        terminal,
-    })
+    Some(Board { name: name?, line: entry.line(), busbar, stud, lugs_on_stud, designed: false })
 }
 
 pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
@@ -112,9 +56,26 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
         ),
         _ => {}
     }
+    entry.ordered(&CURRENT, current, &START, start);
+    let ac = entry.flag(&AC, false);
+    let start_power = entry.quantity(&START_POWER);
+    entry.ordered(&POWER, power, &START_POWER, start_power);
+    let power_factor = entry.quantity(&POWER_FACTOR);
+    let inverter = named(entry, &INVERTER_NAME);
+    let (others, whose) = if ac {
+        (DC_ONLY, "a load on DC; an AC load states power and start_power")
+    } else {
+        (AC_ONLY, "an AC load; write ac = true, or take it out")
+    };
+    let has_power = entry.has(&POWER);
+    for key in others {
+        // A current beside a power is reported as such.
+        if entry.has(key) && !(has_power && key.name == CURRENT.name) {
+            entry.problem(key, format!("it belongs to {whose}"));
+        }
+    }
     let by_default = if entry.has(&CURRENT) { LoadKind::Current } else { LoadKind::Power };
     Some(LoadEntry {
-        name: name?,
         line: entry.line(),
         power,
         current,
@@ -127,6 +88,17 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
         usage: usage.unwrap_or(LoadUse::Other),
         stud,
         terminal,
+        use_of: use_of(entry),
+        ac,
+        inverter,
+        power_factor,
+        start_power,
+        standing: is_standing(entry, continuous),
+        priority: entry.count(&PRIORITY),
+        past_disconnect: entry.flag(&PAST_DISCONNECT, false),
+        board: named(entry, &BOARD_NAME),
+        route: entry.quantity(&ROUTE),
+        name: name?,
     })
 }
 

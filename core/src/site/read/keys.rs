@@ -16,15 +16,15 @@ pub(super) struct Range {
 }
 
 impl Range {
-    const fn new(allowed: Allowed, unit: &'static str) -> Self {
+    pub(super) const fn new(allowed: Allowed, unit: &'static str) -> Self {
         Self { allowed, unit, scale: 1.0, zero: 0.0 }
     }
 
-    const fn scaled(self, scale: f64) -> Self {
+    pub(super) const fn scaled(self, scale: f64) -> Self {
         Self { scale, ..self }
     }
 
-    const fn celsius(least: f64, most: f64) -> Self {
+    pub(super) const fn celsius(least: f64, most: f64) -> Self {
         Self { allowed: Allowed::Between(least, most), unit: "degC", scale: 1.0, zero: 273.15 }
     }
 
@@ -41,23 +41,23 @@ impl Range {
     }
 }
 
-const VOLTS: Range = Range::new(Allowed::AboveUpTo(0.0, 1500.0), "V");
-const AMPERES: Range = Range::new(Allowed::AboveUpTo(0.0, 100_000.0), "A");
-const FAULT: Range = Range::new(Allowed::AboveUpTo(0.0, 1000.0), "kA").scaled(1000.0);
-const AMPERE_HOURS: Range = Range::new(Allowed::AboveUpTo(0.0, 1_000_000.0), "Ah").scaled(3600.0);
-const WATTS: Range = Range::new(Allowed::AboveUpTo(0.0, 10_000.0), "kW").scaled(1000.0);
-const OHMS: Range = Range::new(Allowed::AboveUpTo(0.0, 1000.0), "ohm");
-const METRES: Range = Range::new(Allowed::AboveUpTo(0.0, 10_000.0), "m");
+pub(super) const VOLTS: Range = Range::new(Allowed::AboveUpTo(0.0, 1500.0), "V");
+pub(super) const AMPERES: Range = Range::new(Allowed::AboveUpTo(0.0, 100_000.0), "A");
+pub(super) const FAULT: Range = Range::new(Allowed::AboveUpTo(0.0, 1000.0), "kA").scaled(1000.0);
+pub(super) const AMPERE_HOURS: Range = Range::new(Allowed::AboveUpTo(0.0, 1_000_000.0), "Ah").scaled(3600.0);
+pub(super) const WATTS: Range = Range::new(Allowed::AboveUpTo(0.0, 10_000.0), "kW").scaled(1000.0);
+pub(super) const OHMS: Range = Range::new(Allowed::AboveUpTo(0.0, 1000.0), "ohm");
+pub(super) const METRES: Range = Range::new(Allowed::AboveUpTo(0.0, 10_000.0), "m");
 // A device may sit on the terminal itself.
 const DISTANCE: Range = Range::new(Allowed::Between(0.0, 10_000.0), "m");
-const AIR: Range = Range::celsius(-90.0, 150.0);
+pub(super) const AIR: Range = Range::celsius(-90.0, 150.0);
 const MARKED: Range = Range::celsius(30.0, 300.0);
-const PART: Range = Range::new(Allowed::AboveUpTo(0.0, 1.0), "");
+pub(super) const PART: Range = Range::new(Allowed::AboveUpTo(0.0, 1.0), "");
 const LET_THROUGH: Range = Range::new(Allowed::AboveUpTo(0.0, 1e12), "A2s");
-const PRICE_RANGE: Range = Range::new(Allowed::Between(0.0, 1e9), "");
-const ANY: Range = Range::new(Allowed::Finite, "");
+pub(super) const PRICE_RANGE: Range = Range::new(Allowed::Between(0.0, 1e9), "");
+pub(super) const ANY: Range = Range::new(Allowed::Finite, "");
 
-const fn count(least: f64, most: f64) -> Range {
+pub(super) const fn count(least: f64, most: f64) -> Range {
     Range::new(Allowed::Between(least, most), "")
 }
 
@@ -71,11 +71,16 @@ pub(super) struct Key {
     pub(super) range: Range,
 }
 
-const fn key(name: &'static str, needed: &'static str, example: &'static str, range: Range) -> Key {
+pub(super) const fn key(
+    name: &'static str,
+    needed: &'static str,
+    example: &'static str,
+    range: Range,
+) -> Key {
     Key { name, needed, example, range }
 }
 
-const fn flag(name: &'static str) -> Key {
+pub(super) const fn flag(name: &'static str) -> Key {
     key(name, "true or false", "", ANY)
 }
 
@@ -117,8 +122,8 @@ pub(super) const CONTINUOUS: Key = flag("continuous");
 pub(super) const START: Key = key("start", "a current", "\"30 A\"", AMPERES);
 pub(super) const USE: Key = key("use", "a use", "\"lighting\"", ANY);
 
-pub(super) const FROM: Key = key("from", "the name of a bank or board", "\"house\"", ANY);
-pub(super) const TO: Key = key("to", "the name of a board, load, inverter or bank", "\"pump\"", ANY);
+pub(super) const FROM: Key = key("from", "the name of a bank, board or source", "\"house\"", ANY);
+pub(super) const TO: Key = key("to", "the name of what it feeds", "\"pump\"", ANY);
 pub(super) const ONE_WAY: Key = key("one_way", "a length", "\"2.5 m\"", METRES);
 pub(super) const POSITIVE_LENGTH: Key = key("positive_length", "a length", "\"2.5 m\"", METRES);
 pub(super) const NEGATIVE_LENGTH: Key = key("negative_length", "a length", "\"3 m\"", METRES);
@@ -195,17 +200,15 @@ pub(super) struct Section {
     pub(super) header: &'static str,
     pub(super) needed: &'static [&'static Key],
     pub(super) optional: &'static [&'static Key],
-    /// Keys of the design that this version does not read.
-    pub(super) later: &'static [&'static str],
 }
 
 impl Section {
-    const fn new(
+    pub(super) const fn new(
         header: &'static str,
         needed: &'static [&'static Key],
         optional: &'static [&'static Key],
     ) -> Self {
-        Self { header, needed, optional, later: &[] }
+        Self { header, needed, optional }
     }
 
     /// All its keys, those needed first.
@@ -214,28 +217,7 @@ impl Section {
     }
 }
 
-pub(super) const SITE: Section = Section {
-    header: "[site]",
-    needed: &[&SITE_NAME, &RULES, &EARTHING, &SITE_AMBIENT],
-    optional: &[],
-    later: &["latitude", "longitude", "altitude"],
-};
-pub(super) const BANK: Section = Section::new(
-    "[[bank]]",
-    &[&NAME, &CHEMISTRY, &NOMINAL, &CAPACITY, &CUT_OFF, &HIGHEST],
-    &[&STRINGS, &SHORT_CIRCUIT, &INTERNAL, &GREATEST_DISCHARGE, &STUD],
-);
 pub(super) const BOARD: Section = Section::new("[[board]]", &[&NAME], &[&BUSBAR, &STUD, &LUGS_ON_STUD]);
-pub(super) const INVERTER: Section = Section::new(
-    "[[inverter]]",
-    &[&NAME, &POWER, &EFFICIENCY],
-    &[&SURGE, &IDLE, &LEAST, &GREATEST, &STUD, &TERMINAL],
-);
-pub(super) const LOAD: Section = Section::new(
-    "[[load]]",
-    &[&NAME],
-    &[&POWER, &CURRENT, &LOAD_KIND, &COUNT, &CONTINUOUS, &LEAST, &GREATEST, &START, &USE, &STUD, &TERMINAL],
-);
 pub(super) const CIRCUIT: Section = Section::new(
     "[[circuit]]",
     &[&NAME, &FROM, &TO],
@@ -295,7 +277,6 @@ pub(super) const CIRCUIT_JOINT: Section =
     Section::new("[[circuit.joint]]", &[&JOINT_KIND], &[&COUNT, &RESISTANCE]);
 pub(super) const CIRCUIT_PART: Section =
     Section::new("[[circuit.part]]", &[&NAME, &PART_KIND], &[&RATING, &RESISTANCE, &DC_VOLTAGE, &AC_ONLY]);
-pub(super) const STOCK: Section = Section::new("[stock]", &[], &[&CABLE, &STOCK_DEVICES, &LUG]);
 pub(super) const STOCK_CABLE: Section = Section::new(
     "[[stock.cable]]",
     &[&SIZE, &INSULATION],
@@ -326,42 +307,6 @@ pub(super) const RULES_OVERRIDE: Section = Section::new(
     &[],
     &[&CONTINUOUS_FACTOR, &OWN_DROP, &UNFUSED_LENGTH, &ENGINE_SPACE, &BUNDLING, &DEVICE_RATIO, &ALUMINIUM],
 );
-
-/// Words that people write for a key that has another name here.
-pub(super) const MEANT: [(&str, &str); 12] = [
-    // The length of what? Only the route, or each conductor, is unambiguous (R1).
-    ("length", "one_way"),
-    ("distance", "one_way"),
-    ("run", "one_way"),
-    ("area", "size"),
-    ("cross_section", "size"),
-    ("gauge", "size"),
-    ("voltage", "nominal"),
-    ("type", "kind"),
-    ("grouped", "bundled"),
-    ("temperature", "ambient"),
-    ("fuse", "device"),
-    ("breaker", "device"),
-];
-
-/// Keys at the top of the file, as their headers are written.
-pub(super) const TOP: [(&str, &str); 9] = [
-    ("format", "format = 1"),
-    ("site", "[site]"),
-    ("bank", "[[bank]]"),
-    ("board", "[[board]]"),
-    ("inverter", "[[inverter]]"),
-    ("load", "[[load]]"),
-    ("circuit", "[[circuit]]"),
-    ("stock", "[stock]"),
-    ("rules", "[rules.override]"),
-];
-
-/// Sections that may stand several times.
-pub(super) const PLURAL: [&str; 5] = ["bank", "board", "inverter", "load", "circuit"];
-
-/// Sections of the design that this version does not read.
-pub(super) const LATER: [&str; 6] = ["weather", "array", "controller", "converter", "generator", "reading"];
 
 /// Words and what they stand for.
 pub(super) type Words<T> = &'static [(&'static str, T)];

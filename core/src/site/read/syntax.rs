@@ -9,8 +9,8 @@ use core::ops::Range;
 
 use toml::de::{DeTable, DeValue, Error};
 
-use super::keys::PLURAL;
 use super::log::{Cut, Log};
+use super::sections::PLURAL;
 
 /// Above this size the first syntax error must be mended before the rest is listed: a text of a few MiB can
 /// hold millions, and each would take memory.

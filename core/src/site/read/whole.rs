@@ -9,24 +9,37 @@ use toml::Spanned;
 use toml::de::{DeTable, DeValue};
 
 use super::Problems;
+use super::bank;
 use super::circuits::Circuits;
-use super::ends::{Kind, Node, Plan, Wire};
+use super::ends::Plan;
 use super::entry::{Entry, Found, section, sections};
 use super::equipment;
 use super::keys::{
-    ALUMINIUM, ALUMINIUM_WORDS, BANK, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, EARTHING,
-    EARTHING_WORDS, ENGINE_SPACE, FORMAT, INVERTER, LATER, LOAD, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE,
-    RULES_SECTION, SITE, SITE_AMBIENT, STOCK, Section, TOP, UNFUSED_LENGTH,
+    ALUMINIUM, ALUMINIUM_WORDS, BOARD, BUNDLING, CIRCUIT, CONTINUOUS_FACTOR, DEVICE_RATIO, EARTHING,
+    EARTHING_WORDS, ENGINE_SPACE, FORMAT, OVERRIDE, OWN_DROP, RULES, RULES_OVERRIDE, RULES_SECTION,
+    SITE_AMBIENT, Section, UNFUSED_LENGTH,
 };
 use super::log::{Cut, Log, nearest};
+use super::meant::MEANT_SECTIONS;
+use super::modules;
+use super::nodes::{Kind, Node, Wire};
+use super::plant::rising;
+use super::references::{self, Sections};
+use super::sections::{
+    ARRAY, BANK, CONTROLLER, CONVERTER, GENERATOR, INVERTER, LOAD, READING, SITE, STOCK, TOP, WEATHER,
+};
+use super::sources;
 use super::stock;
+use super::surroundings;
 use super::syntax;
+use super::times;
 use crate::quantity::ThermodynamicTemperature;
 use crate::rules::{Overrides, Rules};
-use crate::site::model::{Earthing, Site};
+use crate::site::model::{Document, Earthing};
+use crate::site::parts::Place;
 
 /// Reads a document of moderate length.
-pub(super) fn site(text: &str) -> Result<Site, Problems> {
+pub(super) fn site(text: &str) -> Result<Document, Problems> {
     let mut log = Log::new(text);
     let (tree, obstacles) = syntax::parsed(text, &mut log);
     let site = if obstacles.is_empty() {
@@ -43,7 +56,7 @@ pub(super) fn site(text: &str) -> Result<Site, Problems> {
     }
 }
 
-fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
+fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Document> {
     if !syntax::is_moderate(tree, log) {
         return None;
     }
@@ -68,48 +81,93 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Site> {
             "there is no section [site]; write one with name, rules, earthing and ambient".to_owned(),
         );
     }
-    let head = head.map(|found| head_of(&mut Entry::open(text, log, &SITE, found, None)));
+    let head = head.and_then(|found| head_of(&mut Entry::open(text, log, &SITE, found, None)));
+    let ambient = head.as_ref().map(|head| head.3);
     let (overrides, overrides_at) = top.overrides(log);
-    let stock = top.one("stock", &STOCK, log).map(|found| stock::stock(text, log, found));
 
-    let banks = top.many("bank", &BANK, log);
-    let boards = top.many("board", &BOARD, log);
-    let inverters = top.many("inverter", &INVERTER, log);
-    let loads = top.many("load", &LOAD, log);
-    let circuits = top.many("circuit", &CIRCUIT, log);
-
+    let mut found = Sections {
+        banks: top.many("bank", &BANK, log),
+        arrays: top.many("array", &ARRAY, log),
+        controllers: top.many("controller", &CONTROLLER, log),
+        generators: top.many("generator", &GENERATOR, log),
+        converters: top.many("converter", &CONVERTER, log),
+        readings: top.many("reading", &READING, log),
+        boards: top.many("board", &BOARD, log),
+        inverters: top.many("inverter", &INVERTER, log),
+        loads: top.many("load", &LOAD, log),
+        circuits: top.many("circuit", &CIRCUIT, log),
+        ..Sections::default()
+    };
+    let stock = top.one("stock", &STOCK, log).map(|at| stock::stock(text, log, at, &mut found));
+    let stock = stock.unwrap_or_default();
     if is_whole {
-        let nodes = [
-            (Kind::Bank, &banks),
-            (Kind::Board, &boards),
-            (Kind::Inverter, &inverters),
-            (Kind::Load, &loads),
-        ];
-        let nodes =
-            nodes.into_iter().flat_map(|(kind, list)| list.iter().filter_map(move |at| Node::of(kind, *at)));
-        Plan::new(nodes.collect(), circuits.iter().map(|found| Wire::of(*found)).collect()).check(log);
+        check_ends(&found, log);
+        references::check(&found, log);
     }
 
-    let banks = read_all(text, log, &BANK, &banks, equipment::bank);
-    let boards = read_all(text, log, &BOARD, &boards, equipment::board);
-    let inverters = read_all(text, log, &INVERTER, &inverters, equipment::inverter);
-    let loads = read_all(text, log, &LOAD, &loads, equipment::load);
-    let mut reader = Circuits::new(text, &circuits);
-    let circuits: Vec<_> = circuits.iter().map(|found| reader.circuit(log, *found)).collect();
+    let weather = top.one("weather", &WEATHER, log);
+    let has_weather = weather.is_some();
+    let weather =
+        weather.and_then(|at| times::weather(&mut Entry::open(text, log, &WEATHER, at, None), ambient));
+    let banks = read_all(text, log, &BANK, &found.banks, |entry| bank::bank(entry, &stock.batteries));
+    let arrays = read_all(text, log, &ARRAY, &found.arrays, modules::array);
+    let controllers = read_all(text, log, &CONTROLLER, &found.controllers, |entry| {
+        sources::controller(entry, &stock.controllers)
+    });
+    let generators = read_all(text, log, &GENERATOR, &found.generators, sources::generator);
+    let converters = read_all(text, log, &CONVERTER, &found.converters, sources::converter);
+    let readings = read_all(text, log, &READING, &found.readings, times::reading);
+    let boards = read_all(text, log, &BOARD, &found.boards, equipment::board);
+    let inverters =
+        read_all(text, log, &INVERTER, &found.inverters, |entry| sources::inverter(entry, &stock.inverters));
+    let loads = read_all(text, log, &LOAD, &found.loads, equipment::load);
+    for circuit in &found.circuits {
+        surroundings::check(ambient, *circuit, log);
+    }
+    let mut reader = Circuits::new(text, &found.circuits);
+    let circuits: Vec<_> = found.circuits.iter().map(|circuit| reader.circuit(log, *circuit)).collect();
 
-    let (name, rules, earthing, ambient) = head??;
-    Some(Site {
+    let (name, rules, earthing, ambient, place) = head?;
+    if has_weather && weather.is_none() {
+        return None;
+    }
+    Some(Document {
         name,
         rules: rules_with(rules, overrides, overrides_at, log)?,
         earthing,
         ambient,
+        place,
+        weather,
         banks: banks?,
+        arrays: arrays?,
+        controllers: controllers?,
+        generators: generators?,
+        converters: converters?,
+        readings: readings?,
         boards: boards?,
         inverters: inverters?,
         loads: loads?,
         circuits: circuits.into_iter().collect::<Option<_>>()?,
-        stock: stock.unwrap_or_default(),
+        stock,
     })
+}
+
+/// Names, ends of circuits, and what they feed.
+fn check_ends(found: &Sections<'_>, log: &mut Log) {
+    let nodes = [
+        (Kind::Bank, &found.banks),
+        (Kind::Array, &found.arrays),
+        (Kind::Controller, &found.controllers),
+        (Kind::Generator, &found.generators),
+        (Kind::Converter, &found.converters),
+        (Kind::Board, &found.boards),
+        (Kind::Inverter, &found.inverters),
+        (Kind::Load, &found.loads),
+    ];
+    let nodes =
+        nodes.into_iter().flat_map(|(kind, list)| list.iter().filter_map(move |at| Node::of(kind, *at)));
+    let wires = found.circuits.iter().map(|circuit| Wire::of(*circuit)).collect();
+    Plan::new(nodes.collect(), wires).check(log);
 }
 
 /// Reads every section of a kind, so that the problems of all are found.
@@ -118,20 +176,19 @@ fn read_all<'d, T>(
     log: &mut Log,
     section: &'static Section,
     found: &[Found<'d>],
-    read: fn(&mut Entry<'d, '_>) -> Option<T>,
+    read: impl Fn(&mut Entry<'d, '_>) -> Option<T>,
 ) -> Option<Vec<T>> {
     let entries: Vec<Option<T>> =
         found.iter().map(|found| read(&mut Entry::open(text, log, section, *found, None))).collect();
     entries.into_iter().collect()
 }
 
-type Head = (String, Rules, Earthing, (ThermodynamicTemperature, ThermodynamicTemperature));
+type Head = (String, Rules, Earthing, (ThermodynamicTemperature, ThermodynamicTemperature), Place);
 
 fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
     let name = entry.name();
     let earthing = entry.word(&EARTHING, EARTHING_WORDS);
-    let ambient: Option<(ThermodynamicTemperature, ThermodynamicTemperature)> =
-        entry.two_quantities(&SITE_AMBIENT);
+    let ambient: Option<(ThermodynamicTemperature, ThermodynamicTemperature)> = rising(entry, &SITE_AMBIENT);
     let rules = entry.text(&RULES).and_then(|word| {
         let rules = Rules::named(word);
         if let Err(error) = &rules {
@@ -139,16 +196,8 @@ fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
         }
         rules.ok()
     });
-    if let Some((least, greatest)) = ambient
-        && least > greatest
-    {
-        entry.problem(
-            &SITE_AMBIENT,
-            "the least temperature is above the greatest; write the least first".to_owned(),
-        );
-        return None;
-    }
-    Some((name?, rules?, earthing?, ambient?))
+    let place = times::place(entry, earthing);
+    Some((name?, rules?, earthing?, ambient?, place))
 }
 
 fn rules_with(rules: Rules, overrides: Overrides, at: usize, log: &mut Log) -> Option<Rules> {
@@ -177,18 +226,18 @@ impl<'d> Top<'d> {
                 continue;
             }
             let at = key.span().start;
-            let sentence = if LATER.contains(&name) {
-                format!(
-                    "this version does not read [{name}] sections yet; take them out, or comment them out"
-                )
-            } else if let Some(word) = nearest(name, TOP.iter().map(|&(known, _)| known)) {
-                let meant = TOP.iter().find(|&&(known, _)| known == word).map_or("", |&(_, written)| written);
-                format!("no section '{}'; did you mean {meant}?", Cut(name))
+            let meant = MEANT_SECTIONS.iter().find(|&&(word, _)| word == name).map(|&(_, written)| written);
+            let near = || {
+                let word = nearest(name, TOP.iter().map(|&(known, _)| known))?;
+                TOP.iter().find(|&&(known, _)| known == word).map(|&(_, written)| written)
+            };
+            let sentence = if let Some(written) = meant.or_else(near) {
+                format!("no section '{}'; did you mean {written}?", Cut(name))
             } else {
                 let all: Vec<&str> = TOP.iter().map(|&(_, written)| written).collect();
                 format!("no section '{}'; at the top stand {}", Cut(name), all.join(", "))
             };
-            is_all_known &= LATER.contains(&name);
+            is_all_known = false;
             log.push(at, String::new(), sentence);
         }
         is_all_known

@@ -1,0 +1,215 @@
+//! Arrays: strings against controller, bank, module and rules, isolators, yield (R10, R20).
+
+use alloc::format;
+use alloc::string::ToString;
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::ratio::ratio;
+
+use super::At;
+use crate::array::{PvCheck, PvOutcome, PvSubject, StringsChecked};
+use crate::citation::Seen;
+use crate::site::finding::{Findings, Severity, digits};
+use crate::site::parts::{ControllerKind, Monitoring};
+use crate::site::pv::{bank_of, checked};
+use crate::site::system::{Array, Site};
+
+/// Voltage of an array over its bank from which a clamp is worth a word. Common practice, no source.
+const CLAMP_LOSS: f64 = 0.25;
+
+/// Every array.
+pub(super) fn arrays(site: &Site, found: &mut Findings) {
+    for array in &site.arrays {
+        let mut at = At::new(found, format!("array \"{}\"", array.part.name), array.part.line);
+        let Some(result) = checked(site, array) else {
+            at.unmade(
+                ("R10", "array-without-controller"),
+                "strings against a controller: it names none, or there is no bank; state controller",
+            );
+            continue;
+        };
+        match result {
+            Ok(strings) => {
+                for check in &strings.checks {
+                    one(array, check, &mut at);
+                }
+                isolator(site, array, &strings, &mut at);
+                earth_fault(site, &strings, &mut at);
+                touch(site, &strings, &mut at);
+                clamp(site, array, &strings, &mut at);
+            }
+            Err(error) => at.unmade(("R10", "array-not-checked"), &format!("strings: {error}")),
+        }
+    }
+}
+
+const fn meaning(subject: PvSubject) -> (&'static str, Severity, &'static str) {
+    match subject {
+        PvSubject::ModuleVoltage | PvSubject::RuleVoltage => {
+            ("array-voltage-too-high", Severity::Nonconforming, "use fewer modules in series")
+        }
+        PvSubject::ControllerVoltage | PvSubject::PartVoltage => (
+            "array-voltage-above-part",
+            Severity::Danger,
+            "use fewer modules in series, or a part for the cold voltage",
+        ),
+        PvSubject::WindowHigh | PvSubject::InputCurrent | PvSubject::OutputCurrent => (
+            "array-yield-cut",
+            Severity::Advice,
+            "accept the loss in the best hours, or use a larger controller",
+        ),
+        PvSubject::WindowLow | PvSubject::ChargeVoltage => (
+            "array-voltage-too-low",
+            Severity::Nonconforming,
+            "use more modules in series: hot, it does not charge",
+        ),
+        PvSubject::ShortCircuit => (
+            "array-current-above-controller",
+            Severity::Nonconforming,
+            "use fewer strings on it, or a larger controller",
+        ),
+        PvSubject::StringFault | PvSubject::ConductorFault => {
+            ("string-device-missing", Severity::Danger, "fit a device in every string")
+        }
+        _ => (
+            "string-device-wrong",
+            Severity::Nonconforming,
+            "use a device between its least and the module's series-fuse rating",
+        ),
+    }
+}
+
+fn one(array: &Array, check: &PvCheck, at: &mut At<'_>) {
+    let (slug, severity, remedy) = meaning(check.subject);
+    match check.outcome {
+        PvOutcome::Passed if check.citation.seen == Seen::Recalled => {
+            at.pass("R10", &format!("{check}: the recalled value; verify ({})", check.citation));
+        }
+        PvOutcome::Passed => at.pass("R10", &check.to_string()),
+        PvOutcome::Failed => {
+            let severity = if check.only_yield { Severity::Advice } else { severity };
+            at.tell(severity, ("R10", slug), check.to_string(), Some(check.citation), remedy);
+        }
+        // One string has no other to feed its fault.
+        PvOutcome::NotChecked
+            if array.strings < 2
+                && matches!(check.subject, PvSubject::StringFault | PvSubject::ConductorFault) => {}
+        PvOutcome::NotChecked => at.unmade(("R10", "array-not-checked"), &check.to_string()),
+    }
+}
+
+/// A load-break isolator between array and controller.
+fn isolator(site: &Site, array: &Array, strings: &StringsChecked, at: &mut At<'_>) {
+    let required = site.rules.pv().isolator;
+    let part = &array.part;
+    if array.designed {
+        return;
+    }
+    match part.load_break {
+        Some(false) => at.tell(
+            Severity::Danger,
+            ("R20", "isolator-not-load-break"),
+            "its isolator is not made to open under load: the arc of an array does not go out".into(),
+            required.map(|r| r.citation),
+            "use a load-break isolator rated for DC at the cold open-circuit voltage",
+        ),
+        None => at.unmade(
+            ("R20", "isolator-not-stated"),
+            "a load-break isolator between array and controller; state isolator, isolator_current and load_break",
+        ),
+        Some(true) => match part.isolator_current {
+            Some(rated) if rated < strings.currents.array_greatest => at.nonconforming(
+                ("R20", "isolator-current-too-low"),
+                format!(
+                    "isolator rated {} A, at least {} A",
+                    digits(rated.get::<ampere>()),
+                    digits(strings.currents.array_greatest.get::<ampere>())
+                ),
+                "use an isolator for the array's greatest current",
+            ),
+            Some(rated) => at.pass("R20", &format!("load-break isolator rated {} A", digits(rated.get::<ampere>()))),
+            None => at.unmade(("R20", "isolator-not-stated"), "current of the isolator; state isolator_current"),
+        },
+    }
+}
+
+/// Watching for a fault to earth, from the set's voltage on.
+fn earth_fault(site: &Site, strings: &StringsChecked, at: &mut At<'_>) {
+    let Some((cold, _)) = strings.voltages.cold_voc else { return };
+    let volts = cold.get::<volt>();
+    let Some(from) = site.rules.pv().earth_fault_from else {
+        at.unmade(
+            ("R19", "monitoring-not-checked"),
+            "monitoring of faults to earth: the rule set holds nothing on arrays",
+        );
+        return;
+    };
+    if volts <= from.value {
+        at.pass(
+            "R19",
+            &format!(
+                "{} V cold, at most {} V without monitoring of faults to earth",
+                digits(volts),
+                digits(from.value)
+            ),
+        );
+        return;
+    }
+    match site.place.monitoring {
+        Some(Monitoring::None) => at.tell(
+            Severity::Nonconforming,
+            ("R19", "array-without-monitoring"),
+            format!(
+                "{} V cold, above {} V, and nothing watches for a fault to earth",
+                digits(volts),
+                digits(from.value)
+            ),
+            Some(from.citation),
+            "fit earth-fault protection or insulation monitoring",
+        ),
+        None => at.unmade(
+            ("R19", "monitoring-not-checked"),
+            &format!(
+                "earth-fault protection or insulation monitoring at {} V; state monitoring",
+                digits(volts)
+            ),
+        ),
+        Some(_) => at.pass("R19", "faults to earth are watched for"),
+    }
+}
+
+/// Above 60 V at any time, or above the set's own limit, live parts are out of reach.
+fn touch(site: &Site, strings: &StringsChecked, at: &mut At<'_>) {
+    let Some((cold, _)) = strings.voltages.cold_voc else { return };
+    let limit = site.rules.pv().touch_from;
+    super::place::touch(site, cold.get::<volt>(), limit.map(|l| (l.value, l.citation)), at);
+}
+
+/// What a clamping controller leaves behind.
+fn clamp(site: &Site, array: &Array, strings: &StringsChecked, at: &mut At<'_>) {
+    let Some(controller) = array.controller.and_then(|c| site.controllers.get(c)) else { return };
+    let Some(bank) = bank_of(site, controller) else { return };
+    if controller.kind != Some(ControllerKind::Pwm) {
+        return;
+    }
+    let vmp = array.module.vmp * f64::from(array.series);
+    let lost = 1.0 - (bank.nominal / vmp).get::<ratio>();
+    if lost > CLAMP_LOSS {
+        at.advice(
+            ("R10", "clamp-loses-yield"),
+            format!(
+                "a controller that joins array and bank holds {} V of modules at {} V: {:.0} % of the power is left \
+                 behind{}",
+                digits(vmp.get::<volt>()),
+                digits(bank.nominal.get::<volt>()),
+                100.0 * lost,
+                strings.voltages.hot_vmp.map_or_else(alloc::string::String::new, |hot| format!(
+                    " (hot, {} V)",
+                    digits(hot.get::<volt>())
+                ))
+            ),
+            "use modules nearer to the bank's voltage, or a tracking controller",
+        );
+    }
+}

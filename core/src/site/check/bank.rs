@@ -1,0 +1,487 @@
+//! Banks: capacity, cold, disconnect, sharing, ventilation (R12 to R15, R20).
+
+use alloc::format;
+use alloc::vec;
+use alloc::vec::Vec;
+
+use uom::si::area::square_centimeter;
+use uom::si::electric_charge::ampere_hour;
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::electrical_resistance::{milliohm, ohm};
+use uom::si::ratio::ratio;
+use uom::si::temperature_interval::kelvin;
+use uom::si::thermodynamic_temperature::degree_celsius;
+use uom::si::time::day;
+use uom::si::volume_rate::cubic_meter_per_hour;
+
+use super::At;
+use crate::battery::{
+    self, ChargeStage, Chemistry, ColdSpell, FREEZING_MARGIN_K, GASSING, Link, StringShare, StringSource,
+    charge_limit, cold_fraction, cold_spell, data, disconnect, freezing_floor, is_within, share,
+    ventilation_flow, ventilation_opening,
+};
+use crate::quantity::{
+    ChargeRate, ElectricCurrent, ElectricalResistance, Ratio, StateOfCharge, TemperatureInterval,
+};
+use crate::site::complete::bank::{Duty, needed, temperatures, was_designed};
+use crate::site::energy::Demand;
+use crate::site::finding::{Findings, Severity, digits};
+use crate::site::parts::{BankPart, Room, TakeOff};
+use crate::site::plan::Plan;
+use crate::site::system::{BankEntry, Site};
+
+/// A string that carries so much more than its share wears first; beyond the second it is overloaded. Common practice,
+/// no source.
+const UNEQUAL: (f64, f64) = (1.1, 1.25);
+/// Generic resistance of a lug at either end of a link, Ω. Common practice, no source.
+const JOINT_OHM: f64 = 0.1e-3;
+/// How far a stated disconnect may lie below what the chemistry, current and cold ask for, part of nominal.
+const DISCONNECT_SLACK: f64 = 0.01;
+
+/// Every bank.
+pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Findings) {
+    for (index, bank) in site.banks.iter().enumerate() {
+        let (Some(chemistry), Some(part)) = (bank.chemistry(), bank.part.as_ref()) else { continue };
+        let demand = demands.iter().find(|d| d.banks.contains(&index));
+        let mut at = At::new(found, format!("bank \"{}\"", bank.name), bank.line);
+        if let Some(demand) = demand {
+            capacity(site, bank, chemistry, part, demand, &mut at);
+        }
+        cold(site, bank, chemistry, part, demand, &mut at);
+        disconnects(site, bank, chemistry, part, demand, &mut at);
+        limits(bank, part, &mut at);
+        ventilation(bank, chemistry, part, &mut at);
+        let drawn = drawn(site, plan, &bank.name);
+        sharing(bank, part, drawn, &mut at);
+    }
+}
+
+/// Greatest current out of a bank.
+pub(in crate::site) fn drawn(site: &Site, plan: &Plan, name: &str) -> ElectricCurrent {
+    site.circuits
+        .iter()
+        .zip(&plan.circuits)
+        .filter(|(c, _)| c.from == name || c.to == name)
+        .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current))
+        .sum()
+}
+
+/// Capacity against what the loads ask for (R12).
+fn capacity(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    demand: &Demand,
+    at: &mut At<'_>,
+) {
+    if demand.banks.len() > 1 {
+        at.unmade(
+            ("R12", "capacity-not-checked"),
+            "capacity: several banks are joined, and how they share the demand is not known",
+        );
+        return;
+    }
+    let duty = Duty::of(site, part, bank.nominal, demand, None);
+    if duty.daily.value <= 0.0 {
+        return;
+    }
+    match needed(chemistry, &duty) {
+        Ok((need, _, _)) if bank.capacity < need * (1.0 - 1e-9) => at.nonconforming(
+            ("R12", "bank-too-small"),
+            format!(
+                "{} Ah, at least {} Ah for {} Ah a day over {} d",
+                digits(bank.capacity.get::<ampere_hour>()),
+                digits(need.get::<ampere_hour>()),
+                digits(duty.daily.get::<ampere_hour>()),
+                digits(duty.autonomy.get::<day>())
+            ),
+            "use a larger bank, less load, or state a shorter autonomy",
+        ),
+        Ok((need, _, _)) => at.pass(
+            "R12",
+            &format!(
+                "{} Ah, at least {} Ah for {} Ah a day over {} d ({})",
+                digits(bank.capacity.get::<ampere_hour>()),
+                digits(need.get::<ampere_hour>()),
+                digits(duty.daily.get::<ampere_hour>()),
+                digits(duty.autonomy.get::<day>()),
+                duty.autonomy_by
+            ),
+        ),
+        Err(error) => at.unmade(("R12", "capacity-not-checked"), &format!("capacity: {error}")),
+    }
+}
+
+/// Freezing, charge blocked by cold, temperatures of discharge and storage (R13).
+fn cold(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    demand: Option<&Demand>,
+    at: &mut At<'_>,
+) {
+    let (coldest, warmest) = temperatures(site, part);
+    let celsius = coldest.get::<degree_celsius>();
+    let held = data(chemistry);
+    for (temperature, word) in [(coldest, "coldest"), (warmest, "warmest")] {
+        if is_within(held.discharge_degC, temperature) == Ok(false) {
+            at.tell(
+                Severity::Nonconforming,
+                ("R13", "temperature-beyond-discharge"),
+                format!(
+                    "{} °C at its {word}; it gives current between {} and {} °C",
+                    digits(temperature.get::<degree_celsius>()),
+                    digits(held.discharge_degC.value.0),
+                    digits(held.discharge_degC.value.1)
+                ),
+                Some(held.discharge_degC.citation),
+                "keep the bank milder",
+            );
+        }
+    }
+    let margin = TemperatureInterval::new::<kelvin>(FREEZING_MARGIN_K);
+    let depth = part.depth.map_or(held.usual_depth.value, |d| d.get::<ratio>());
+    match freezing_floor(chemistry, coldest, margin) {
+        Ok(None) => {}
+        Ok(Some(floor)) if floor.get() > 1.0 - depth => at.nonconforming(
+            ("R13", "electrolyte-may-freeze"),
+            format!(
+                "at {} °C it must stay above {:.0} % of charge, and is discharged to {:.0} %",
+                digits(celsius),
+                100.0 * floor.get(),
+                100.0 * (1.0 - depth)
+            ),
+            "disconnect earlier, keep the bank warmer, or make it larger",
+        ),
+        Ok(Some(floor)) => at.pass(
+            "R13",
+            &format!(
+                "at {} °C it must stay above {:.0} % of charge, and does",
+                digits(celsius),
+                100.0 * floor.get()
+            ),
+        ),
+        Err(error) => {
+            at.danger(("R13", "electrolyte-may-freeze"), format!("{error}"), "keep the bank warmer")
+        }
+    }
+    let from = part.charge_from.map(|t| t.get::<degree_celsius>());
+    let admitted = match (from, charge_limit(chemistry, coldest)) {
+        (Some(from), _) => celsius >= from,
+        (None, Ok(limit)) => limit.ceiling.get() > 0.0,
+        (None, Err(_)) => false,
+    };
+    if admitted {
+        at.pass("R13", &format!("takes charge at {} °C, its coldest", digits(celsius)));
+        return;
+    }
+    let daily = demand.map(|d| d.greatest_day().charge(bank.nominal)).filter(|q| q.value > 0.0);
+    let left = cold_fraction(chemistry, coldest).map_or(0.5, |f| f.value.get::<ratio>());
+    let lasts = daily.and_then(|daily_demand| {
+        cold_spell(&ColdSpell {
+            chemistry,
+            capacity: bank.capacity,
+            start: StateOfCharge::new(1.0).ok()?,
+            temperature: coldest,
+            cold_fraction: Ratio::new::<ratio>(left),
+            daily_demand,
+            margin,
+        })
+        .ok()
+    });
+    at.nonconforming(
+        ("R13", "charge-blocked-by-cold"),
+        format!(
+            "at {} °C, its coldest, it takes no charge{}",
+            digits(celsius),
+            lasts.map_or_else(alloc::string::String::new, |o| format!(
+                ": the loads empty it in {} d",
+                digits(o.until_disconnect.get::<day>())
+            ))
+        ),
+        "keep the bank warmer, or use one that is charged in frost",
+    );
+}
+
+/// Disconnect and reconnect (R14).
+fn disconnects(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    demand: Option<&Demand>,
+    at: &mut At<'_>,
+) {
+    let peak = demand.map_or(0.0, |d| (d.peak / bank.nominal).get::<ampere>());
+    let rate = ChargeRate::per_hour((peak / bank.capacity.get::<ampere_hour>()).clamp(0.0, 100.0));
+    let asked = rate.and_then(|rate| disconnect(chemistry, bank.cells, rate, temperatures(site, part).0));
+    if part.line == 0 || (part.disconnect.is_none() && was_designed(part)) {
+        if let Ok(asked) = asked {
+            at.pass(
+                "R14",
+                &format!(
+                    "to be disconnected at {} V and reconnected at {} V ({})",
+                    digits(bank.cut_off.get::<volt>()),
+                    digits(asked.reconnect.get::<volt>()),
+                    asked.citation
+                ),
+            );
+        }
+        return;
+    }
+    let Some(own) = part.disconnect else {
+        at.nonconforming(
+            ("R14", "bank-without-disconnect"),
+            "no disconnect is stated: nothing keeps the loads from emptying it".into(),
+            "fit a disconnect for low voltage, and state disconnect and reconnect",
+        );
+        return;
+    };
+    let slack = DISCONNECT_SLACK * bank.nominal.get::<volt>();
+    match asked {
+        Ok(asked) if own.get::<volt>() < asked.disconnect.get::<volt>() - slack => at.tell(
+            Severity::Nonconforming,
+            ("R14", "disconnect-too-low"),
+            format!(
+                "disconnected at {} V; chemistry, {} A and {} °C ask for {} V",
+                digits(own.get::<volt>()),
+                digits(peak),
+                digits(temperatures(site, part).0.get::<degree_celsius>()),
+                digits(asked.disconnect.get::<volt>())
+            ),
+            Some(asked.citation),
+            "raise it: under load the bank is emptier than the voltage says",
+        ),
+        Ok(asked) => at.pass(
+            "R14",
+            &format!(
+                "disconnected at {} V, at least {} V",
+                digits(own.get::<volt>()),
+                digits(asked.disconnect.get::<volt>())
+            ),
+        ),
+        Err(error) => at.unmade(("R14", "disconnect-not-checked"), &format!("disconnect voltage: {error}")),
+    }
+    if own < bank.cut_off {
+        at.nonconforming(
+            ("R14", "disconnect-below-cut-off"),
+            format!(
+                "disconnected at {} V, and the wiring is laid out for {} V at least",
+                digits(own.get::<volt>()),
+                digits(bank.cut_off.get::<volt>())
+            ),
+            "state the lower as cut_off",
+        );
+    }
+    match part.reconnect {
+        None => at.unmade(("R14", "reconnect-not-stated"), "reconnect voltage; state reconnect"),
+        Some(back) => match asked {
+            Ok(asked) if back.get::<volt>() < own.get::<volt>() + 0.025 * bank.nominal.get::<volt>() => at
+                .tell(
+                    Severity::Nonconforming,
+                    ("R14", "reconnect-too-near"),
+                    format!(
+                        "reconnected at {} V, disconnected at {} V: it switches to and fro",
+                        digits(back.get::<volt>()),
+                        digits(own.get::<volt>())
+                    ),
+                    Some(asked.citation),
+                    "raise the reconnect voltage",
+                ),
+            _ => at.pass("R14", &format!("reconnected at {} V", digits(back.get::<volt>()))),
+        },
+    }
+}
+
+/// What its maker admits in series and in parallel, and batteries that are not alike (R15).
+fn limits(bank: &BankEntry, part: &BankPart, at: &mut At<'_>) {
+    if let Some(most) = part.max_parallel.filter(|&most| bank.strings > most) {
+        at.nonconforming(
+            ("R15", "too-many-strings"),
+            format!("{} strings in parallel, at most {most} by its maker", bank.strings),
+            "use batteries of greater capacity",
+        );
+    }
+    if let Some(most) = part.max_series.filter(|&most| bank.series > most) {
+        at.danger(
+            ("R15", "too-many-in-series"),
+            format!("{} packs in series, at most {most} by their maker", bank.series),
+            "use packs for the voltage of the bank",
+        );
+    }
+    if part.mixed {
+        at.advice(
+            ("R15", "mixed-batteries"),
+            "batteries of different age or type: the weakest is overcharged and emptied first".into(),
+            "renew them together",
+        );
+    }
+}
+
+/// Air and place (R20).
+fn ventilation(bank: &BankEntry, chemistry: Chemistry, part: &BankPart, at: &mut At<'_>) {
+    let cells = Ratio::new::<ratio>(f64::from(bank.cells));
+    let Ok(flow) = ventilation_flow(chemistry, ChargeStage::Boost, cells, bank.capacity) else {
+        at.pass("R20", "gives off no hydrogen in ordinary use");
+        return;
+    };
+    let vented = data(chemistry).vented.value;
+    match part.space {
+        Some(Room::Living) if vented => at.tell(
+            Severity::Danger,
+            ("R20", "bank-in-living-space"),
+            format!("{} cells gas where people live or sleep", chemistry.word()),
+            Some(GASSING),
+            "put it in a ventilated room or box of its own",
+        ),
+        Some(Room::Engine) => at.danger(
+            ("R20", "bank-in-engine-space"),
+            format!("{} cells gas beside what can ignite it", chemistry.word()),
+            "put it in a ventilated box away from engine and fuel",
+        ),
+        Some(Room::Outdoors) => {
+            at.pass("R20", "stands outdoors");
+            return;
+        }
+        _ => {}
+    }
+    let hours = flow.get::<cubic_meter_per_hour>();
+    let opening = ventilation_opening(flow).map_or(f64::NAN, |a| a.get::<square_centimeter>());
+    let words = format!("{} m³/h of air, or two openings of {} cm² each", digits(hours), digits(opening));
+    match (
+        part.air.map(|a| a.get::<cubic_meter_per_hour>()),
+        part.opening.map(|a| a.get::<square_centimeter>()),
+    ) {
+        (Some(air), _) if air >= hours => {
+            at.pass("R20", &format!("{} m³/h of air, at least {} m³/h", digits(air), digits(hours)))
+        }
+        (_, Some(own)) if own >= opening => {
+            at.pass("R20", &format!("two openings of {} cm², at least {} cm²", digits(own), digits(opening)))
+        }
+        (None, None) if part.designed => at.pass("R20", &format!("to be ventilated by {words}")),
+        (None, None) => at.unmade(
+            ("R20", "ventilation-not-stated"),
+            &format!("ventilation: it needs {words}; state air or opening"),
+        ),
+        (air, own) => at.tell(
+            Severity::Danger,
+            ("R20", "ventilation-too-small"),
+            format!(
+                "{}, it needs {words}",
+                match (air, own) {
+                    (Some(air), _) => format!("{} m³/h of air", digits(air)),
+                    (None, own) => format!("openings of {} cm²", digits(own.unwrap_or(0.0))),
+                }
+            ),
+            Some(GASSING),
+            "enlarge the openings, one low and one high, or move more air",
+        ),
+    }
+}
+
+/// How parallel strings share (R15).
+pub(in crate::site) fn sharing(bank: &BankEntry, part: &BankPart, drawn: ElectricCurrent, at: &mut At<'_>) {
+    let strings = bank.strings as usize;
+    if strings < 2 {
+        return;
+    }
+    let designed = was_designed(part);
+    let Some(take_off) = part.take_off else {
+        if designed {
+            at.pass("R15", "strings to be led by equal leads to a busbar, with a device in every string");
+        } else {
+            at.unmade(
+                ("R15", "strings-not-checked"),
+                &format!("how {strings} parallel strings share; state take_off, link and joint"),
+            );
+        }
+        return;
+    };
+    let way = match take_off {
+        TakeOff::OneEnd => battery::TakeOff::OneEnd,
+        TakeOff::Diagonal => battery::TakeOff::Diagonal,
+        TakeOff::Busbar => battery::TakeOff::Busbar,
+    };
+    if !way.is_admitted(strings) {
+        at.nonconforming(
+            ("R15", "strings-not-on-busbar"),
+            format!(
+                "{strings} strings taken off {}",
+                if take_off == TakeOff::OneEnd { "at one end" } else { "diagonally: for two only" }
+            ),
+            "lead equal cables from every string to a busbar",
+        );
+    }
+    if strings > 2 && part.string_device.is_none() && !designed {
+        at.danger(
+            ("R15", "string-without-device"),
+            format!(
+                "{strings} strings, and no device in each: the others feed a shorted cell with all they have"
+            ),
+            "fit a device in every string, and state string_device",
+        );
+    }
+    let Some(resistance) = part.internal_resistance.map(|r| r * f64::from(bank.strings)) else {
+        at.unmade(
+            ("R15", "strings-not-checked"),
+            "how its strings share: its internal_resistance is not stated",
+        );
+        return;
+    };
+    let joint = part.joint.unwrap_or_else(|| ElectricalResistance::new::<ohm>(JOINT_OHM));
+    let Some(link) = part.link else {
+        at.unmade(
+            ("R15", "strings-not-checked"),
+            "how its strings share: link, the resistance between neighbours, is not stated",
+        );
+        return;
+    };
+    let whole = link + joint * 2.0;
+    let own = if take_off == TakeOff::Busbar { resistance + whole * 2.0 } else { resistance };
+    let source = StringSource { emf: bank.nominal, resistance: own };
+    let links = if take_off == TakeOff::Busbar {
+        Vec::new()
+    } else {
+        vec![Link { positive: whole, negative: whole }; strings - 1]
+    };
+    let mut shares = vec![StringShare::default(); strings];
+    let current = if drawn.value > 0.0 { drawn } else { ElectricCurrent::new::<ampere>(1.0) };
+    match share(&vec![source; strings], &links, way, current, &mut shares) {
+        Ok(result) => {
+            let part_of = result.greatest_part.get::<ratio>();
+            let each: Vec<alloc::string::String> =
+                shares.iter().map(|s| digits(s.current.get::<ampere>())).collect();
+            let text = format!(
+                "strings share {} A as {} A, links of {} mΩ with their joints, {} mΩ a string",
+                digits(current.get::<ampere>()),
+                each.join(", "),
+                digits(whole.get::<milliohm>()),
+                digits(resistance.get::<milliohm>())
+            );
+            if part_of > UNEQUAL.1 {
+                at.nonconforming(("R15", "strings-share-unequally"), text, "lead equal cables to a busbar");
+            } else if part_of > UNEQUAL.0 {
+                at.advice(("R15", "strings-share-unequally"), text, "lead equal cables to a busbar");
+            } else {
+                at.pass("R15", &text);
+            }
+            if let Some(device) = part.string_device
+                && device < result.greatest
+            {
+                at.nonconforming(
+                    ("R15", "string-device-too-small"),
+                    format!(
+                        "device of a string {} A, and the hardest string carries {} A",
+                        digits(device.get::<ampere>()),
+                        digits(result.greatest.get::<ampere>())
+                    ),
+                    "use a larger device, and leads that it protects",
+                );
+            }
+        }
+        Err(error) => at.unmade(("R15", "strings-not-checked"), &format!("how its strings share: {error}")),
+    }
+}

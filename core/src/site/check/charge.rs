@@ -1,0 +1,441 @@
+//! Charging: what all sources give together, their set points, compensation, sense, data links, load dump (R11, R13).
+
+use alloc::format;
+use alloc::vec;
+use alloc::vec::Vec;
+
+use uom::si::electric_charge::ampere_hour;
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+use uom::si::thermodynamic_temperature::degree_celsius;
+
+use super::At;
+use crate::battery::{Chemistry, Standing, VoltageRange, cell_set_points, charge_limit, set_points};
+use crate::generator::{ChargeSource, Contribution, LoadDump, SourceKind, source_sum};
+use crate::quantity::{ElectricCurrent, ElectricPotential, ThermodynamicTemperature};
+use crate::site::complete::bank::temperatures;
+use crate::site::finding::{Findings, Severity, digits};
+use crate::site::parts::{BankPart, GeneratorKind};
+use crate::site::system::{BankEntry, Charger, ChargerKind, Site};
+
+/// Least compensation a cell of lead-acid wants, V/K: handbooks give 3 to 5 mV.
+const LEAST_COMPENSATION: f64 = -0.003;
+/// Span of cell temperatures over which charge without compensation errs little, K. Common practice, no source.
+const STEADY_K: f64 = 10.0;
+const MILD_DEGC: f64 = 25.0;
+
+/// A charger as a source.
+pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<ChargeSource> {
+    let limit = charger.limit?;
+    Some(match charger.kind {
+        ChargerKind::Controller(index) => {
+            let rated: f64 = site
+                .arrays
+                .iter()
+                .filter(|a| a.controller == Some(index))
+                .map(|a| a.module.power.value * f64::from(a.series) * f64::from(a.strings))
+                .sum();
+            let volts =
+                charger.bank.and_then(|b| site.banks.get(b)).map_or(f64::NAN, |b| b.nominal.get::<volt>());
+            let best = ElectricCurrent::new::<ampere>(rated / volts);
+            // Without an array, or with one that gives more, the controller's own output counts.
+            let nameplate = if rated > 0.0 && best < limit { best } else { limit };
+            ChargeSource { controller_limit: Some(limit), ..ChargeSource::new(SourceKind::Array, nameplate) }
+        }
+        ChargerKind::Generator(index) => {
+            let part = site.generators.get(index)?;
+            let kind = match part.kind {
+                GeneratorKind::Engine => SourceKind::EngineSet,
+                GeneratorKind::Alternator => SourceKind::Alternator,
+                GeneratorKind::Shore => SourceKind::Shore,
+                GeneratorKind::Wind => SourceKind::Wind,
+                GeneratorKind::Hydro => SourceKind::Hydro,
+            };
+            let load_dump =
+                part.load_dump.map(|bears| if bears { LoadDump::Bears } else { LoadDump::DoesNotBear });
+            ChargeSource { lasting: part.hot_output, load_dump, ..ChargeSource::new(kind, limit) }
+        }
+    })
+}
+
+/// Every bank.
+pub(super) fn banks(site: &Site, found: &mut Findings) {
+    for (index, bank) in site.banks.iter().enumerate() {
+        let (Some(chemistry), Some(part)) = (bank.chemistry(), bank.part.as_ref()) else { continue };
+        let chargers: Vec<&Charger> = site.chargers.iter().filter(|c| c.bank == Some(index)).collect();
+        let mut at = At::new(found, format!("bank \"{}\"", bank.name), bank.line);
+        if chargers.is_empty() {
+            at.nonconforming(
+                ("R11", "bank-without-charge"),
+                "nothing charges it: no controller, generator or converter".into(),
+                "state what charges it, or write [weather] and let an array be designed",
+            );
+            continue;
+        }
+        sum(site, bank, chemistry, part, &chargers, &mut at);
+        for charger in chargers {
+            let mut at = At::new(found, format!("\"{}\" into \"{}\"", charger.name, bank.name), charger.line);
+            one(site, bank, chemistry, part, charger, &mut at);
+        }
+    }
+}
+
+/// All sources together against what the bank takes.
+fn sum(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    chargers: &[&Charger],
+    at: &mut At<'_>,
+) {
+    let sources: Vec<ChargeSource> = chargers.iter().filter_map(|c| source_of(site, c)).collect();
+    if sources.len() < chargers.len() {
+        let names: Vec<&str> =
+            chargers.iter().filter(|c| c.limit.is_none()).map(|c| c.name.as_str()).collect();
+        at.unmade(
+            ("R11", "charger-limit-not-stated"),
+            &format!("charge current: {} states no output", names.join(", ")),
+        );
+        return;
+    }
+    let mut each = vec![
+        Contribution {
+            place: 0,
+            kind: SourceKind::Array,
+            greatest: ElectricCurrent::default(),
+            greatest_by: crate::generator::LimitedBy::Nameplate,
+            lasting: ElectricCurrent::default(),
+            lasting_by: crate::generator::LimitedBy::Nameplate,
+            load_dump: LoadDump::Unknown,
+        };
+        sources.len()
+    ];
+    let Ok(sum) = source_sum(&sources, &mut each) else { return };
+    let greatest = sum.greatest.get::<ampere>();
+    let capacity = bank.capacity.get::<ampere_hour>();
+    let mild = ThermodynamicTemperature::new::<degree_celsius>(MILD_DEGC);
+    let Ok(limit) = charge_limit(chemistry, mild) else { return };
+    let (usual, ceiling) = (limit.usual.get() * capacity, limit.ceiling.get() * capacity);
+    match part.greatest_charge.map(|a| a.get::<ampere>()) {
+        Some(own) if greatest > own => at.nonconforming(
+            ("R11", "charge-above-limit"),
+            format!("{} A of all sources, at most {} A by its maker", digits(greatest), digits(own)),
+            "limit the sources at their outputs, or use a larger bank",
+        ),
+        Some(own) => at.pass(
+            "R11",
+            &format!("{} A of all sources, at most {} A by its maker", digits(greatest), digits(own)),
+        ),
+        None if greatest > ceiling => at.tell(
+            Severity::Danger,
+            ("R11", "charge-above-ceiling"),
+            format!(
+                "{} A of all sources, {} /h; at most {} A even by a maker's word, {} A without",
+                digits(greatest),
+                digits(greatest / capacity),
+                digits(ceiling),
+                digits(usual)
+            ),
+            Some(limit.citation),
+            "limit the sources at their outputs, or use a larger bank",
+        ),
+        None if greatest > usual => at.tell(
+            Severity::Nonconforming,
+            ("R11", "charge-above-limit"),
+            format!(
+                "{} A of all sources, at most {} A ({} /h)",
+                digits(greatest),
+                digits(usual),
+                digits(limit.usual.get())
+            ),
+            Some(limit.citation),
+            "limit the sources at their outputs, state the maker's greatest_charge, or use a larger bank",
+        ),
+        None => at.pass(
+            "R11",
+            &format!(
+                "{} A of all sources, at most {} A ({} /h)",
+                digits(greatest),
+                digits(usual),
+                digits(limit.usual.get())
+            ),
+        ),
+    }
+    if let Some(least) = limit.least
+        && sum.lasting.get::<ampere>() < least.get() * capacity
+    {
+        at.tell(
+            Severity::Advice,
+            ("R11", "charge-rate-low"),
+            format!(
+                "{} A of all sources for hours, {} A mix and fill its cells ({} /h)",
+                digits(sum.lasting.get::<ampere>()),
+                digits(least.get() * capacity),
+                digits(least.get())
+            ),
+            Some(limit.citation),
+            "equalise from a stronger source now and then, or use a smaller bank",
+        );
+    }
+    cold(site, chemistry, part, (greatest, capacity), at);
+    if part.data_link {
+        let text = "its charge limit reaches the sources over a data link only: a limit that rests on it is no protection";
+        let allowed = part.greatest_charge.map_or(usual, |a| a.get::<ampere>());
+        if greatest > allowed {
+            at.nonconforming(
+                ("R11", "limit-by-data-link"),
+                text.into(),
+                "limit the sources at their outputs",
+            );
+        } else {
+            at.pass("R11", "the sources keep to its limit without the data link");
+        }
+    }
+    if part.opens_under_charge {
+        dump(site, chargers, &each, at);
+    }
+}
+
+/// The sources against what the bank takes at its coldest.
+fn cold(
+    site: &Site,
+    chemistry: Chemistry,
+    part: &BankPart,
+    (greatest, capacity): (f64, f64),
+    at: &mut At<'_>,
+) {
+    let (coldest, warmest) = temperatures(site, part);
+    let from = part.charge_from.map(|t| t.get::<degree_celsius>());
+    for (temperature, word) in [(coldest, "coldest"), (warmest, "warmest")] {
+        let celsius = temperature.get::<degree_celsius>();
+        let Ok(limit) = charge_limit(chemistry, temperature) else { continue };
+        let blocked = match (word, from) {
+            ("coldest", Some(from)) => celsius < from,
+            _ => limit.ceiling.get() <= 0.0,
+        };
+        if blocked {
+            // Told by the case of its own (R13).
+            if word == "warmest" {
+                at.nonconforming(
+                    ("R11", "charge-blocked-by-heat"),
+                    format!("at {} °C, its warmest, it takes no charge", digits(celsius)),
+                    "keep the bank cooler",
+                );
+            }
+            continue;
+        }
+        // By the pack's own word it is charged there: its limit holds.
+        if part.greatest_charge.is_some() || (word == "coldest" && from.is_some()) {
+            continue;
+        }
+        let most = limit.usual.get() * capacity;
+        if greatest > most {
+            at.tell(
+                Severity::Nonconforming,
+                ("R11", "charge-above-limit-in-cold"),
+                format!(
+                    "{} A of all sources at {} °C, its {word}, at most {} A there ({} /h)",
+                    digits(greatest),
+                    digits(celsius),
+                    digits(most),
+                    digits(limit.usual.get())
+                ),
+                Some(limit.citation),
+                "limit the sources by temperature, keep the bank milder, or state the maker's greatest_charge",
+            );
+        }
+    }
+}
+
+/// A pack that opens while it is charged.
+fn dump(site: &Site, chargers: &[&Charger], each: &[Contribution], at: &mut At<'_>) {
+    for (charger, contribution) in chargers.iter().zip(each) {
+        let stated = match charger.kind {
+            ChargerKind::Generator(i) => site.generators.get(i).and_then(|g| g.load_dump),
+            ChargerKind::Controller(_) => None,
+        };
+        match contribution.load_dump {
+            LoadDump::Bears => at.pass("R11", &format!("\"{}\" bears that the pack opens under charge", charger.name)),
+            LoadDump::DoesNotBear => at.danger(
+                ("R11", "load-dump"),
+                format!(
+                    "the pack may open under charge, and \"{}\" {} bear it: its voltage runs away into every load",
+                    charger.name,
+                    if stated.is_some() { "does not" } else { "is not known to" }
+                ),
+                "use a source or a clamp made for it, or a pack that keeps its terminals closed",
+            ),
+            LoadDump::Unknown => at.unmade(
+                ("R11", "load-dump-not-stated"),
+                &format!("what \"{}\" does when the pack opens under charge", charger.name),
+            ),
+        }
+    }
+}
+
+/// Set points of one charger.
+fn one(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    charger: &Charger,
+    at: &mut At<'_>,
+) {
+    let mild = ThermodynamicTemperature::new::<degree_celsius>(MILD_DEGC);
+    let Ok(points) = set_points(chemistry, bank.cells, mild) else { return };
+    if charger.line == 0 {
+        at.pass(
+            "R11",
+            &format!(
+                "to be set to absorption {} V{}{} at 25 °C",
+                digits(points.absorption.usual().get::<volt>()),
+                points.float.map_or_else(alloc::string::String::new, |f| format!(
+                    ", float {} V",
+                    digits(f.usual().get::<volt>())
+                )),
+                points.equalise.map_or_else(alloc::string::String::new, |e| format!(
+                    ", equalising {} V",
+                    digits(e.usual().get::<volt>())
+                ))
+            ),
+        );
+        return;
+    }
+    let charging = charger.charging;
+    if charging.absorption.is_none() {
+        at.unmade(
+            ("R11", "set-points-not-stated"),
+            &format!(
+                "set points against {}; state absorption, float and equalise (absorption {} to {} V at 25 °C)",
+                chemistry.word(),
+                digits(points.absorption.low.get::<volt>()),
+                digits(points.absorption.high.get::<volt>())
+            ),
+        );
+    }
+    let lithium = matches!(chemistry, Chemistry::Lfp | Chemistry::Nmc);
+    let mut hold = |name: &str, stated: Option<ElectricPotential>, range: Option<VoltageRange>| {
+        let Some(stated) = stated else { return };
+        let volts = digits(stated.get::<volt>());
+        let Some(range) = range else {
+            at.tell(
+                Severity::Nonconforming,
+                ("R11", "set-point-not-for-chemistry"),
+                format!("{name} {volts} V is set, and {} takes none", chemistry.word()),
+                Some(points.citation),
+                "switch that stage off",
+            );
+            return;
+        };
+        let span = format!("{} to {} V", digits(range.low.get::<volt>()), digits(range.high.get::<volt>()));
+        match range.standing(stated) {
+            Standing::Within => at.pass("R11", &format!("{name} {volts} V, usual {span} at 25 °C")),
+            Standing::Below => at.tell(
+                Severity::Nonconforming,
+                ("R11", "set-point-low"),
+                format!("{name} {volts} V, usual {span} at 25 °C for {}: it is never full", chemistry.word()),
+                Some(points.citation),
+                "set it by the maker's figure",
+            ),
+            Standing::Above | Standing::NotANumber => at.tell(
+                if lithium { Severity::Danger } else { Severity::Nonconforming },
+                ("R11", "set-point-high"),
+                format!("{name} {volts} V, usual {span} at 25 °C for {}", chemistry.word()),
+                Some(points.citation),
+                "set it by the maker's figure",
+            ),
+        }
+    };
+    hold("absorption", charging.absorption, Some(points.absorption));
+    hold("float", charging.float, points.float);
+    hold("equalising", charging.equalise, points.equalise);
+    compensation(site, chemistry, part, charger, at);
+    reaches(site, bank, chemistry, part, charger, at);
+}
+
+fn compensation(site: &Site, chemistry: Chemistry, part: &BankPart, charger: &Charger, at: &mut At<'_>) {
+    let usual = cell_set_points(chemistry);
+    let (coldest, warmest) = temperatures(site, part);
+    let span = warmest.get::<degree_celsius>() - coldest.get::<degree_celsius>();
+    let stated = charger.charging.compensation.map(|c| c.value);
+    let wants = usual.compensation_V_per_K < 0.0;
+    match stated {
+        None if wants && span > STEADY_K => at.unmade(
+            ("R11", "compensation-not-stated"),
+            "compensation of the charge voltage for temperature; state compensation, 0 where there is none",
+        ),
+        Some(own) if wants && span > STEADY_K && own > LEAST_COMPENSATION => at.tell(
+            Severity::Nonconforming,
+            ("R11", "compensation-missing"),
+            format!(
+                "{} mV/K a cell between {} and {} °C; {} wants {} mV/K",
+                digits(own * 1e3),
+                digits(coldest.get::<degree_celsius>()),
+                digits(warmest.get::<degree_celsius>()),
+                chemistry.word(),
+                digits(usual.compensation_V_per_K * 1e3)
+            ),
+            Some(usual.compensation_citation),
+            "fit a sensor at the bank, and set the compensation",
+        ),
+        Some(own) if !wants && own < 0.0 => at.tell(
+            Severity::Nonconforming,
+            ("R11", "compensation-not-for-chemistry"),
+            format!(
+                "{} mV/K a cell; {} wants none: it is overcharged in the cold",
+                digits(own * 1e3),
+                chemistry.word()
+            ),
+            Some(usual.compensation_citation),
+            "set the compensation to 0",
+        ),
+        Some(own) if wants => at.pass("R11", &format!("compensated by {} mV/K a cell", digits(own * 1e3))),
+        _ => {}
+    }
+}
+
+/// A bank's stated highest voltage against what a charger reaches in the cold (R3).
+fn reaches(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    charger: &Charger,
+    at: &mut At<'_>,
+) {
+    let charging = charger.charging;
+    let top = [charging.absorption, charging.equalise]
+        .into_iter()
+        .flatten()
+        .map(|v| v.get::<volt>())
+        .fold(f64::NEG_INFINITY, f64::max);
+    if part.highest.is_none() || !top.is_finite() {
+        return;
+    }
+    let cell = cell_set_points(chemistry);
+    let (least, greatest) = cell.compensated_degC;
+    let cold = temperatures(site, part).0.get::<degree_celsius>().max(least).min(greatest);
+    let slope = charging.compensation.map_or(cell.compensation_V_per_K, |c| c.value);
+    let reached = top + (slope * (cold - MILD_DEGC) * f64::from(bank.cells)).max(0.0);
+    let highest = bank.highest.get::<volt>();
+    // A tenth of a volt is the last digit of a setting.
+    if reached > highest + 0.1 {
+        at.nonconforming(
+            ("R3", "highest-below-charging"),
+            format!(
+                "it reaches {} V at {} °C, and the bank's highest is stated as {} V: every part is held against too little",
+                digits(reached),
+                digits(cold),
+                digits(highest)
+            ),
+            "state the highest voltage that charging reaches, cold, or lower the set points",
+        );
+    } else {
+        at.pass(
+            "R3",
+            &format!("reaches {} V cold, at most {} V as stated", digits(reached), digits(highest)),
+        );
+    }
+}

@@ -1,0 +1,126 @@
+//! What sources drive through the circuits: chargers towards their bank, arrays towards their controller (R7, R10, R11).
+//!
+//! They limit themselves: what they can give is their design current, and no fuse is operated by it.
+
+use alloc::vec;
+use alloc::vec::Vec;
+
+use uom::si::electric_current::ampere;
+use uom::si::electric_potential::volt;
+
+use super::flow::Flows;
+use super::graph::{Item, Tree};
+use super::parts::Sense;
+use super::system::{FeedKind, Site};
+use crate::rules::LoadUse;
+
+/// Sums of what hangs at or below each node.
+fn below(tree: &Tree, own: impl Fn(Item) -> f64) -> Vec<f64> {
+    let mut sums: Vec<f64> = tree.nodes.iter().map(|node| own(node.item)).collect();
+    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
+        let amps = sums.get(index).copied().unwrap_or(0.0);
+        if let Some(parent) = sums.get_mut(node.parent) {
+            *parent += amps;
+        }
+    }
+    sums
+}
+
+impl Flows {
+    /// Chargers: each fills its own circuit, and all together what lies between them and the bank.
+    pub fn take_chargers(&mut self, site: &Site, tree: &Tree) {
+        let limit = |item: Item| match item {
+            Item::Charger(i) => site.chargers.get(i).and_then(|c| c.limit).map_or(0.0, |a| a.get::<ampere>()),
+            _ => 0.0,
+        };
+        if !tree.nodes.iter().any(|node| matches!(node.item, Item::Charger(_))) {
+            return;
+        }
+        let charge = below(tree, limit);
+        // Volts lost on the way to the bank while every source gives all it may.
+        let mut lost = vec![0.0; tree.nodes.len()];
+        for (index, node) in tree.nodes.iter().enumerate().skip(1) {
+            let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+            let amps = charge.get(index).copied().unwrap_or(0.0);
+            let before = lost.get(node.parent).copied().unwrap_or(0.0);
+            if let Some(own) = lost.get_mut(index) {
+                *own = before + amps * flow.ohms;
+            }
+            let Item::Charger(charger) = node.item else {
+                if amps > flow.current {
+                    // By the sources, and no more by the loads.
+                    flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
+                    flow.current = amps;
+                    flow.continuous_share = 1.0;
+                    flow.charged = true;
+                }
+                continue;
+            };
+            flow.current = amps;
+            flow.low_current = None;
+            flow.single = amps;
+            flow.continuous_share = 1.0;
+            flow.start = None;
+            flow.started = None;
+            flow.least_voltage = None;
+            flow.beginning = flow.highest;
+            flow.drop_before = before.min(0.5 * flow.highest);
+            flow.charged = true;
+            let sensed = site.chargers.get(charger).and_then(|c| c.charging.sense) == Some(Sense::Bank);
+            flow.usage = if sensed { LoadUse::Other } else { LoadUse::Charging };
+        }
+    }
+
+    /// Arrays and converters: the conductors that leave them carry all that they can give.
+    pub fn take_limits(&mut self, site: &Site, tree: &Tree) {
+        let Some(Item::Bank(root)) = tree.nodes.first().map(|n| n.item) else { return };
+        match site.banks.get(root).map(|feed| feed.kind) {
+            Some(FeedKind::Array(_)) => self.take_array(site, tree),
+            Some(FeedKind::Converter(_)) => {
+                let limit = site.banks.get(root).and_then(|f| f.limit).map_or(0.0, |a| a.get::<ampere>());
+                for node in tree.nodes.iter().skip(1).filter(|node| node.parent == 0) {
+                    let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+                    flow.limit = Some(limit);
+                    if limit > flow.current {
+                        flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
+                        flow.current = limit;
+                    }
+                }
+            }
+            _ => {}
+        }
+    }
+
+    fn take_array(&mut self, site: &Site, tree: &Tree) {
+        let feed = |item: Item| match item {
+            Item::Bank(i) => site.banks.get(i),
+            _ => None,
+        };
+        let most = below(tree, |item| feed(item).and_then(|f| f.limit).map_or(0.0, |a| a.get::<ampere>()));
+        let usual = below(tree, |item| {
+            feed(item).and_then(|f| f.greatest_discharge).map_or(0.0, |a| a.get::<ampere>())
+        });
+        let inputs = below(tree, |item| if matches!(item, Item::ControllerInput(_)) { 1.0 } else { 0.0 });
+        let (all, all_usual) = (most.first().copied().unwrap_or(0.0), usual.first().copied().unwrap_or(0.0));
+        for (index, node) in tree.nodes.iter().enumerate().skip(1) {
+            let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+            let at = |list: &[f64]| list.get(index).copied().unwrap_or(0.0);
+            // Towards the controller, from whichever side the arrays stand.
+            let (amps, running) = if at(&inputs) > 0.0 {
+                (all - at(&most), all_usual - at(&usual))
+            } else {
+                (at(&most), at(&usual))
+            };
+            flow.current = amps;
+            flow.low_current = Some(running);
+            flow.continuous_share = 1.0;
+            flow.limit = Some(amps);
+            flow.usage = LoadUse::Other;
+            flow.drop_before = 0.0;
+            let feed = tree.nodes.first().and_then(|n| feed(n.item));
+            if let Some(feed) = feed {
+                flow.beginning = feed.cut_off.get::<volt>();
+            }
+        }
+    }
+}
