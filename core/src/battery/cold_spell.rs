@@ -5,7 +5,6 @@ use uom::si::time::day;
 
 use super::{Chemistry, Datum, capacity_factor, charge_limit, cold_fraction, data, freezing_floor};
 use crate::catalogue::calculations;
-use crate::citation::{Citation, Seen};
 use crate::error::Error;
 use crate::quantity::{
     ElectricCharge, Ratio, StateOfCharge, TemperatureInterval, ThermodynamicTemperature, Time,
@@ -22,9 +21,8 @@ pub struct ColdSpell {
     pub start: StateOfCharge,
     /// Temperature of the cells throughout.
     pub temperature: ThermodynamicTemperature,
-    /// Part of the capacity that the maker states there; else, for lead-acid, one over its temperature factor, for
-    /// the others [`cold_fraction`].
-    pub stated_fraction: Option<Ratio>,
+    /// Part of the capacity that the cold leaves: as the maker states it, else [`capacity_left`].
+    pub cold_fraction: Ratio,
     /// Charge that the loads take in a day.
     pub daily_demand: ElectricCharge,
     /// Distance kept from the freezing point.
@@ -49,8 +47,6 @@ pub struct ColdSpellOutcome {
     pub floor: StateOfCharge,
     /// What sets it.
     pub floor_by: DischargeFloor,
-    /// Part of the capacity that the cold leaves.
-    pub cold_fraction: Datum<Ratio>,
     /// Charge that the loads get until then; nought where the bank begins below the floor.
     pub usable: ElectricCharge,
     /// Time until then.
@@ -74,7 +70,7 @@ pub struct ColdSpellOutcome {
 ///     capacity: parse("100 Ah")?,
 ///     start: StateOfCharge::new(1.0)?,
 ///     temperature: parse("-20 degC")?,
-///     stated_fraction: Some(parse("50 %")?),
+///     cold_fraction: parse("50 %")?,
 ///     daily_demand: parse("5 Ah")?,
 ///     margin: parse("5 K")?,
 /// })?;
@@ -90,25 +86,40 @@ pub fn cold_spell(spell: &ColdSpell) -> Result<ColdSpellOutcome, Error> {
         Some(freezing) if freezing.get() > deepest => (freezing, DischargeFloor::Freezing),
         _ => (StateOfCharge::new(deepest)?, DischargeFloor::Depth),
     };
-    let cold_fraction = fraction_of(spell)?;
     let start = Ratio::new::<ratio>(spell.start.get());
     let least = Ratio::new::<ratio>(floor.get().min(spell.start.get()));
     let until_disconnect =
-        days_to_disconnect(spell.capacity, start, least, cold_fraction.value, spell.daily_demand)?;
-    let usable = spell.capacity * usable_part(start.value, least.value, cold_fraction.value.value);
-    Ok(ColdSpellOutcome { charge_admitted, floor, floor_by, cold_fraction, usable, until_disconnect })
+        days_to_disconnect(spell.capacity, start, least, spell.cold_fraction, spell.daily_demand)?;
+    let usable = spell.capacity * usable_part(start.value, least.value, spell.cold_fraction.value);
+    Ok(ColdSpellOutcome { charge_admitted, floor, floor_by, usable, until_disconnect })
 }
 
-fn fraction_of(spell: &ColdSpell) -> Result<Datum<Ratio>, Error> {
-    if let Some(value) = spell.stated_fraction {
-        let citation = Citation::new("the maker's capacity", "as stated", Seen::Stated);
-        return Ok(Datum { value, citation });
-    }
-    if !spell.chemistry.is_lead_acid() {
-        return cold_fraction(spell.chemistry, spell.temperature);
+/// Part of the capacity at 25 °C that a battery of any chemistry gives at a temperature, at most the whole.
+///
+/// For lead-acid one over its [`capacity_factor`], for the others [`cold_fraction`].
+///
+/// # Errors
+/// As those two: [`Error::OutOfRange`] if the temperature is NaN or outside −60 … 100 °C, [`Error::TableEnds`] where none is
+/// held, below −3.9 °C for lead-acid and below −20 °C for the others.
+///
+/// # Example
+/// ```
+/// # use ampwright::battery::{Chemistry, capacity_left};
+/// # use ampwright::quantity::parse;
+/// let left = capacity_left(Chemistry::Flooded, parse("1.7 degC")?)?.value.value;
+/// assert!((left - 1.0 / 1.35).abs() < 1e-12);
+/// assert!(capacity_left(Chemistry::Flooded, parse("-10 degC")?).is_err());
+/// # Ok::<(), ampwright::Error>(())
+/// ```
+pub fn capacity_left(
+    chemistry: Chemistry,
+    temperature: ThermodynamicTemperature,
+) -> Result<Datum<Ratio>, Error> {
+    if !chemistry.is_lead_acid() {
+        return cold_fraction(chemistry, temperature);
     }
     let one = Ratio::new::<ratio>(1.0);
-    let Datum { value, citation } = capacity_factor(spell.chemistry, spell.temperature)?;
+    let Datum { value, citation } = capacity_factor(chemistry, temperature)?;
     let fraction = one / value;
     // Warmth is no reason to count on more than the rating.
     Ok(Datum { value: if fraction > one { one } else { fraction }, citation })
@@ -182,7 +193,7 @@ mod tests {
                     capacity: ElectricCharge::new::<ampere_hour>(c),
                     start: soc(0.9),
                     temperature: at(if b > 0.0 { a } else { -10.0 }),
-                    stated_fraction: Some(Ratio::new::<ratio>(0.5)),
+                    cold_fraction: Ratio::new::<ratio>(0.5),
                     daily_demand: ElectricCharge::new::<ampere_hour>(d),
                     margin: k(5.0),
                 });
@@ -204,7 +215,10 @@ mod tests {
             capacity: ElectricCharge::new::<ampere_hour>(100.0),
             start: soc(start),
             temperature: at(celsius),
-            stated_fraction: fraction.map(Ratio::new::<ratio>),
+            cold_fraction: match fraction {
+                Some(stated) => Ratio::new::<ratio>(stated),
+                None => capacity_left(chemistry, at(celsius))?.value,
+            },
             daily_demand: ElectricCharge::new::<ampere_hour>(10.0),
             margin: k(5.0),
         })
@@ -218,7 +232,8 @@ mod tests {
         assert!((lfp.until_disconnect.get::<day>() - 6.3).abs() < 1e-9);
         let flooded = spell(Chemistry::Flooded, 1.0, 1.7, None).unwrap();
         assert!(flooded.charge_admitted);
-        assert!((flooded.cold_fraction.value.value - 1.0 / 1.35).abs() < 1e-12);
+        // 100 Ah, of which 0.8, over the factor of the cold.
+        assert!((flooded.usable.get::<ampere_hour>() - 80.0 / 1.35).abs() < 1e-9);
         // Below its table the cold of lead-acid must be stated.
         assert_eq!(spell(Chemistry::Flooded, 1.0, -10.0, None).unwrap_err().slug(), "table-ends");
         assert!(spell(Chemistry::Flooded, 1.0, -10.0, Some(0.6)).is_ok());

@@ -40,7 +40,9 @@ pub use cold::{
     FREEZING_ACID, FREEZING_LYE, FREEZING_MARGIN_K, freezes, freezing_floor, freezing_margin, freezing_point,
     least_state_of_charge,
 };
-pub use cold_spell::{ColdSpell, ColdSpellOutcome, DischargeFloor, cold_spell, days_to_disconnect};
+pub use cold_spell::{
+    ColdSpell, ColdSpellOutcome, DischargeFloor, capacity_left, cold_spell, days_to_disconnect,
+};
 pub use data::{ChemistryData, Datum, KineticParameters, data};
 pub use disconnect::{DISCONNECT, Disconnect, DisconnectVoltage, disconnect, disconnect_voltage};
 pub use factors::{cold_fraction, is_within, life_years, resistance_factor};
