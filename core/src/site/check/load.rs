@@ -103,18 +103,21 @@ fn with_surge(entry: &InverterEntry, plain: Inverter) -> Inverter {
 }
 
 fn judged(at: &mut At<'_>, verdict: &InverterVerdict) {
-    let mut one = |what: &str, slug: &'static str, suffices: Suffices, remedy: &'static str| match suffices {
+    let mut one = |what: &str,
+                   slug: (&'static str, &'static str),
+                   suffices: Suffices,
+                   remedy: &'static str| match suffices {
         Suffices::Yes { given, asked } => at.pass(
             "R16",
             &format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
         ),
         Suffices::No { given, asked } => at.nonconforming(
-            ("R16", slug),
+            slug,
             format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
             remedy,
         ),
         Suffices::TooShort { given, asked } => at.nonconforming(
-            ("R16", slug),
+            slug,
             format!("{what}: for {} s, the start lasts {} s", digits(given.value), digits(asked.value)),
             remedy,
         ),
@@ -125,13 +128,13 @@ fn judged(at: &mut At<'_>, verdict: &InverterVerdict) {
     };
     one(
         "continuous power against its loads",
-        "inverter-overloaded",
+        ("R16", "inverter-overloaded"),
         if verdict.power.passes() { verdict.apparent } else { verdict.power },
         "use a larger inverter, or fewer loads at a time",
     );
     one(
         "power while the largest load starts",
-        "inverter-start-too-large",
+        ("R16", "inverter-start-too-large"),
         verdict.start,
         "use an inverter with more surge, or a soft start",
     );
