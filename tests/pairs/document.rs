@@ -102,7 +102,7 @@ impl Document {
                 "bank",
                 "name = 'bank'; chemistry = 'agm'; nominal = '12 V'; capacity = '100 Ah'; cut_off = '10.5 V'; \
                  highest = '15 V'; internal_resistance = '5 mohm'; greatest_discharge = '50 A'; disconnect = '11.8 V'; \
-                 reconnect = '12.9 V'; space = 'room'; air = '5 m3/h'",
+                 reconnect = '12.9 V'; space = 'room'; air = '5 m3/h'; temperature = ['25 degC', '30 degC']",
             )
             .add(
                 "generator",
