@@ -97,6 +97,7 @@ const CYCLE_TABLE: Citation = Citation::new(
 const WELLS: Citation =
     Citation::new("common practice, no source", "fits usual hour-rate capacities", Seen::Practice);
 const LFP_PAGES: Citation = Citation::new("cell data sheets", "LFP discharge limits", Seen::Page);
+const NICKEL_STANDARD: Citation = Citation::new("IEC 60623", "", Seen::Recalled);
 
 const fn wells(available_ratio: f64, rate_per_h: f64) -> Datum<KineticParameters> {
     datum(KineticParameters { available_ratio, rate_per_h }, WELLS)
@@ -237,10 +238,13 @@ const NICKEL_CADMIUM: ChemistryData = ChemistryData {
     charge_efficiency: datum(0.8, STORAGE),
     energy_efficiency: datum(0.65, HANDBOOK),
     self_discharge_per_month: datum(0.1, HANDBOOK),
-    end_of_life: datum(0.8, PRACTICE),
+    end_of_life: datum(
+        0.8,
+        Citation::new("IEEE Std 1106", "replacement at 80 % of capacity", Seen::Recalled),
+    ),
     cold_capacity: datum(&NICKEL_COLD, SHEETS),
     storage_degC: datum((-40.0, 50.0), HANDBOOK),
-    discharge_degC: datum((-20.0, 45.0), HANDBOOK),
+    discharge_degC: datum((-20.0, 45.0), NICKEL_STANDARD),
     peukert: datum((1.05, 1.2), EXPONENTS),
     kinetic: wells(0.5, 1.5),
     cycles: datum(&NICKEL_CYCLES, HANDBOOK),
