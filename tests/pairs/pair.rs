@@ -126,7 +126,7 @@ fn not_made(slug: &str) -> &'static str {
         | "array-yield-cut"
         | "string-device-missing"
         | "string-device-wrong"
-        | "clamp-loses-yield" => "array-",
+        | "clamp-loses-yield" => "array-not-checked",
         "isolator-not-load-break" | "isolator-current-too-low" => "isolator-not-stated",
         "array-without-monitoring" => "monitoring-not-checked",
         "charge-above-limit" | "charge-above-ceiling" | "charge-rate-low" => "charger-limit-not-stated",

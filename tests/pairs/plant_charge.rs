@@ -32,7 +32,7 @@ fn two_banks(charged: &str, board: &str) -> Document {
             "bank",
             &format!(
                 "name = 'reserve'; chemistry = 'agm'; nominal = '12 V'; capacity = '100 Ah'; cut_off = '10.5 V'; \
-                 highest = '15 V'; internal_resistance = '5 mohm'; greatest_discharge = '50 A'; disconnect = '11.8 V'; \
+                 highest = '15 V'; internal_resistance = '5 mohm'; greatest_discharge = '50 A'; disconnect = '12 V'; \
                  reconnect = '12.9 V'; space = 'room'; air = '5 m3/h'; temperature = ['25 degC', '30 degC']; \
                  board = '{board}'"
             ),
@@ -119,7 +119,7 @@ fn rates() -> Vec<Pair> {
             ..wrong(
                 ("R11", "limit-by-data-link"),
                 "no limit rests on a data link",
-                lithium("output = '?'").with("bank", "data_link = true"),
+                lithium("output = '?'").with("bank", "data_link = true; greatest_discharge = '100 A'"),
                 ("49 A", "51 A"),
             )
         },
@@ -245,14 +245,14 @@ fn set_points() -> Vec<Pair> {
             ("R11", "set-point-not-for-chemistry"),
             "lithium is not equalised",
             lithium("?"),
-            ("float = '13.5 V'", "float = '13.5 V'\nequalise = '14.5 V'"),
+            ("", "equalise = '14.5 V'"),
         ),
         Pair::of(
             Danger,
             ("R11", "set-point-not-for-chemistry"),
             "least of all above what its cells bear",
             lithium("?"),
-            ("float = '13.5 V'", "float = '13.5 V'\nequalise = '14.65 V'"),
+            ("", "equalise = '14.65 V'"),
         ),
         Pair::of(
             NotChecked,

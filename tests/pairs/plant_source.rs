@@ -37,6 +37,7 @@ fn converter(limit: &str) -> Document {
             "load",
             "name = 'radio'; current = '5 A'; hours = '1 h'; least = '1 V'; greatest = '100 V'; board = 'second'; route = '1 m'",
         )
+        .add("circuit", "name = 'main'; from = 'bank'; to = 'main'; one_way = '1 m'")
         .add("circuit", "name = 'input'; from = 'main'; to = 'converter'; one_way = '1 m'")
         .add(
             "circuit",
@@ -54,11 +55,13 @@ fn charger(kind: &str, output: &str, at_the_bank: &str) -> Document {
             "generator",
             &format!("kind = '{kind}'; output = '{output}'; load_dump = true; self_limiting = true"),
         )
+        .add("board", "name = 'main'; busbar = '100 A'")
+        .add("circuit", "name = 'main'; from = 'bank'; to = 'main'; one_way = '1 m'")
         .add(
             "circuit",
             &format!("name = 'charge'; from = 'charger'; to = 'bank'; one_way = '1 m'; {CLIPPED}"),
         )
-        .add("circuit.device", &format!("{}; end = '{at_the_bank}'", device("gG", "25 A")))
+        .add("circuit.device", &format!("{}; end = '{at_the_bank}'", device("class T", "25 A")))
 }
 
 pub fn pairs() -> Vec<Pair> {
@@ -88,14 +91,14 @@ pub fn pairs() -> Vec<Pair> {
         ),
         Pair::of(
             Danger,
-            ("R7", "second-feeding-end-unprotected"),
+            ("R7", "device-missing"),
             "a charger's conductor has its device at the bank's end",
             charger("shore", "20 A", "?"),
             ("to", "from"),
         ),
         Pair::of(
             Danger,
-            ("R7", "second-feeding-end-unprotected"),
+            ("R7", "device-missing"),
             "an alternator that limits itself has its device at the bank's end",
             charger("alternator", "20 A", "?"),
             ("to", "from"),

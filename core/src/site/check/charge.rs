@@ -257,7 +257,9 @@ fn cold(
     // Where it takes none at all it is told by the case of its own (R13); by the pack's own word it takes its own limit.
     let blocked = if from.is_some() { !by_pack } else { limit.ceiling.get() <= 0.0 };
     let most = limit.usual.get() * capacity;
-    if blocked || greatest <= most || (by_pack && part.greatest_charge.is_some()) {
+    let mild = ThermodynamicTemperature::new::<degree_celsius>(MILD_DEGC);
+    let as_warm = charge_limit(chemistry, mild).is_ok_and(|mild| mild.usual.get() <= limit.usual.get());
+    if blocked || as_warm || greatest <= most || (by_pack && part.greatest_charge.is_some()) {
         return;
     }
     if part.greatest_charge.is_some() || limit.ceiling.get() <= 0.0 {
