@@ -37,7 +37,7 @@ fn sunny(array: &str, coldest: &str, controller: &str) -> Document {
         )
         .add(
             "stock.controller",
-            &format!("name = 'c'; input_current = '60 A'; output = '60 A'; start_margin = '1 V'; {controller}"),
+            &format!("name = 'c'; input_current = '60 A'; output = '60 A'; start_margin = '1 V'; sense = 'bank'; {controller}"),
         )
 }
 
@@ -102,7 +102,7 @@ fn nominal_voltage_rises_where_the_current_would_not_be_practical() {
             .add(
                 "load",
                 &format!(
-                    "name = 'load'; power = '{power}'; hours = '0.2 h'; least = '9 V'; greatest = '{greatest}'; route = '0.5 m'"
+                    "name = 'load'; power = '{power}'; hours = '2 h'; least = '9 V'; greatest = '{greatest}'; route = '0.5 m'"
                 ),
             );
         report(&site)
