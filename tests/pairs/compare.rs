@@ -69,7 +69,11 @@ fn an_added_inverter_shows_feeder_fuse_and_drop() {
         assert_eq!(change(&changes.circuits, "circuit \"inverter feed\"", what).earlier, None);
     }
     assert!(!changes.purchases.is_empty());
-    assert!(changes.purchases.iter().all(|c| !c.why_earlier.is_empty() || !c.why_later.is_empty()));
+    // Sleeves and allowances follow from what they are for.
+    let bought = |c: &&Change| c.place.contains("copper class") && !c.place.contains("allowance");
+    assert!(changes.purchases.iter().any(|c| bought(&c)));
+    let bare = |c: &Change| c.why_earlier.is_empty() && c.why_later.is_empty();
+    assert!(!changes.purchases.iter().filter(bought).any(bare));
     let text = changes.to_string();
     assert!(text.lines().any(|l| l.starts_with("  ~ circuit \"feeder\", current: 10 A → ")), "{text}");
     // One line a change, and a heading a group.
