@@ -14,6 +14,7 @@ mod document;
 mod drop;
 mod fault;
 mod golden;
+mod json;
 mod load;
 mod metal;
 mod order;
@@ -22,6 +23,7 @@ mod part;
 mod path;
 mod place;
 mod reading;
+mod schema;
 mod start;
 mod trust;
 
