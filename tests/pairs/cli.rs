@@ -230,3 +230,40 @@ fn all_problems_of_a_file_are_told_at_once_in_its_order() {
     assert_eq!(numbers.len(), 3, "{err}");
     assert!(numbers.is_sorted(), "{err}");
 }
+
+#[test]
+fn json_is_printed_with_the_same_status() {
+    let json = PathBuf::from("--json");
+    let of = |text: &str| {
+        let site = ampwright::site::read(text).unwrap_or_else(|problems| panic!("{problems}"));
+        ampwright::site::inspect(&site).unwrap_or_else(|problems| panic!("{problems}"))
+    };
+    let (heron, bad) = (of(HERON_POINT), of(BADLY_BUILT));
+    let status = i32::from(heron.exit_code());
+    assert_eq!(run([json.clone()]), (status, heron.to_json(), String::new()));
+    assert_eq!(run([json.clone(), example("heron_point.toml")]), (status, heron.to_json(), String::new()));
+    assert_eq!(run([json.clone(), example("badly_built.toml")]), (1, bad.to_json(), String::new()));
+    let compare = PathBuf::from("--compare");
+    let sites = [json.clone(), compare.clone(), example("heron_point.toml"), example("badly_built.toml")];
+    assert_eq!(run(&sites), (1, bad.compare(&heron).to_json(), String::new()));
+    let same = [json, compare, example("badly_built.toml"), example("badly_built.toml")];
+    assert_eq!(run(&same), (0, bad.compare(&bad).to_json(), String::new()));
+}
+
+#[test]
+fn wrong_arguments_beside_json_are_told_in_a_sentence() {
+    let [json, compare] = ["--json", "--compare"].map(PathBuf::from);
+    let site = example("heron_point.toml");
+    is_refused(&[json.clone(), site.clone(), site.clone()], &[&["one site file at a time"]]);
+    is_refused(&[json.clone(), compare.clone(), site.clone()], &[&["two site files to compare", "--json"]]);
+    is_refused(&[json.clone(), json.clone()], &[&["'--json' is no option here", "--compare"]]);
+    is_refused(&[json.clone(), PathBuf::from("--yaml")], &[&["'--yaml' is no option here"]]);
+    is_refused(&[PathBuf::from("--yaml"), site.clone()], &[&["'--yaml' is no option here", "--json"]]);
+    is_refused(&[site.clone(), json.clone()], &[&["--json comes first"]]);
+    is_refused(&[compare, site.clone(), site, json.clone()], &[&["two site files to compare", "[--json]"]]);
+    is_refused(&[json.clone(), PathBuf::from("")], &[&["cannot be read"]]);
+    let bad = file("json_bad.toml", b"format = 1\n");
+    let (status, out, err) = run([json, bad]);
+    assert_eq!((status, out.as_str()), (2, ""));
+    assert!(!err.is_empty() && !err.contains('{'), "{err}");
+}

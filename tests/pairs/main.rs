@@ -14,6 +14,7 @@ mod document;
 mod drop;
 mod fault;
 mod golden;
+mod json;
 mod load;
 mod metal;
 mod order;
@@ -29,6 +30,7 @@ mod plant_load;
 mod plant_place;
 mod plant_source;
 mod reading;
+mod schema;
 mod start;
 mod trust;
 
