@@ -11,6 +11,7 @@ use super::check::At;
 use super::check::place::touch;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
+use super::model::Board;
 use super::plan::{Plan, sources};
 use super::system::{BankEntry, Site};
 use crate::battery::cell_voltages;
@@ -22,29 +23,34 @@ const EXTRA_LOW_V: f64 = 120.0;
 /// Most lugs on one stud (R8).
 const LUGS: u32 = 4;
 
+/// What a busbar must carry, A, and what of: all that its sources let pass, or all that its loads draw (R7, R8).
+pub(super) fn busbar_need(site: &Site, plan: &Plan, board: &Board) -> (f64, &'static str) {
+    let (mut fed, mut drawn) = (0.0, 0.0);
+    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+        let Some(planned) = planned else { continue };
+        if circuit.from != board.name && circuit.to != board.name {
+            continue;
+        }
+        let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
+        let current = planned.judgement.current.get::<ampere>();
+        let other = if circuit.to == board.name { &circuit.from } else { &circuit.to };
+        // A charger limits itself: no device stands for it.
+        if site.chargers.iter().any(|c| c.name == *other) {
+            fed += current;
+        } else if towards {
+            fed += planned.fitted.first().map_or(current, |f| f.guard.device.rating.get::<ampere>());
+        } else {
+            drawn += current;
+        }
+    }
+    if fed >= drawn { (fed, "the devices and sources that feed it") } else { (drawn, "its loads") }
+}
+
 /// Busbars and studs (R8).
 pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
     for board in &site.boards {
         let place = format!("board \"{}\"", board.name);
-        let mut drawn = 0.0;
-        let mut fed = 0.0;
-        for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-            let Some(planned) = planned else { continue };
-            if circuit.from != board.name && circuit.to != board.name {
-                continue;
-            }
-            let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
-            if towards {
-                fed += planned.fitted.first().map_or_else(
-                    || planned.judgement.current.get::<ampere>(),
-                    |f| f.guard.device.rating.get::<ampere>(),
-                );
-            } else {
-                drawn += planned.judgement.current.get::<ampere>();
-            }
-        }
-        let (need, what) =
-            if fed >= drawn { (fed, "the devices that feed it") } else { (drawn, "its loads") };
+        let (need, what) = busbar_need(site, plan, board);
         match board.busbar.map(|b| b.get::<ampere>()) {
             None if board.designed => {
                 found.pass("R8", &place, &format!("busbar to be bought for at least {} A", digits(need)));

@@ -25,7 +25,7 @@ use crate::site::energy::{DayDemand, Demand};
 use crate::site::finding::digits;
 use crate::site::lines::{Rejected, Step};
 use crate::site::model::Document;
-use crate::site::parts::{ArrayPart, Charging, ControllerKind, ControllerPart, ModulePart};
+use crate::site::parts::{ArrayPart, Charging, ControllerKind, ControllerPart, ModulePart, Sense};
 use crate::site::pv::{ask, module_of};
 use crate::site::read::Problem;
 use crate::site::supply::{ARRAY_LOSS, day_energy, efficiency, module_power};
@@ -268,6 +268,11 @@ fn take_choice(
                 name,
                 line: 0,
                 bank: Some(entry.name.clone()),
+                charging: Charging {
+                    // A designed controller is bought with leads that sense at the bank (R11).
+                    sense: choice.controller.charging.sense.or(Some(Sense::Bank)),
+                    ..choice.controller.charging
+                },
                 ..choice.controller
             };
             site.controllers.push(part);

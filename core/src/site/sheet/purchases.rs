@@ -18,12 +18,14 @@ use crate::cable::{Conductor, Stud};
 use crate::device::Supply;
 use crate::protection::Guard;
 use crate::quantity::ConductorSize;
+use crate::site::check::bank::drawn;
 use crate::site::finding::digits;
-use crate::site::model::{Board, CircuitEntry, Return, StockDevice};
+use crate::site::model::{CircuitEntry, Return, StockDevice};
 use crate::site::parts::{ControllerKind, ControllerPart};
 use crate::site::plan::{Plan, Planned};
+use crate::site::plant::busbar_need;
 use crate::site::report::Report;
-use crate::site::system::Site;
+use crate::site::system::{FeedKind, Site};
 use crate::site::text::{conductor_words, device_words};
 use crate::site::wiring::{name_of, stud_of};
 
@@ -98,15 +100,19 @@ impl Basket {
     }
 }
 
+/// A string carries more than an equal share as the others age: a quarter on top. Common practice, no source.
+const STRING_MARGIN: f64 = 1.25;
+
 /// Everything to buy; nothing where nothing was designed.
 pub(in crate::site) fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
     let mut basket = Basket::default();
     plant(site, &mut basket);
+    strings(site, plan, &mut basket);
     cables(site, plan, &mut basket);
     lugs(site, plan, &mut basket);
     devices(site, plan, &mut basket);
     for board in site.boards.iter().filter(|b| b.designed) {
-        let need = busbar_need(site, plan, board);
+        let need = busbar_need(site, plan, board).0;
         let what = format!("busbar for at least {} A", digits(need));
         basket.pieces(2, what, &board.name, None, None);
     }
@@ -117,10 +123,40 @@ pub(in crate::site) fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
     basket.0
 }
 
+/// A device and equal leads for every string of a designed bank of several (R15), and isolators of designed arrays (R20).
+fn strings(site: &Site, plan: &Plan, basket: &mut Basket) {
+    for bank in site.banks.iter().filter(|b| b.strings > 1) {
+        if !bank.part.as_ref().is_some_and(|p| p.designed) {
+            continue;
+        }
+        let share = drawn(site, plan, &bank.name).get::<ampere>() / f64::from(bank.strings);
+        let what = format!(
+            "device for one string, at least {} A, {} V DC, with two equal leads to a busbar",
+            digits(STRING_MARGIN * share),
+            digits(bank.highest.get::<volt>())
+        );
+        basket.pieces(bank.strings, what, &bank.name, None, None);
+        basket.pieces(2, "busbar for the strings".to_string(), &bank.name, None, None);
+    }
+    for feed in &site.banks {
+        let FeedKind::Array(index) = feed.kind else { continue };
+        let Some(array) = site.arrays.get(index).filter(|a| a.designed && a.part.isolator.is_none()) else {
+            continue;
+        };
+        let amps = feed.limit.map_or(0.0, |a| a.get::<ampere>());
+        let what = format!(
+            "load-break isolator, at least {} V DC, {} A",
+            digits(feed.highest.get::<volt>()),
+            digits(amps)
+        );
+        basket.pieces(1, what, &array.part.name, None, None);
+    }
+}
+
 /// Batteries, modules, controllers and inverters that the design chose.
 fn plant(site: &Site, basket: &mut Basket) {
     for bank in &site.banks {
-        let Some(part) = bank.part.as_ref().filter(|p| p.line == 0) else { continue };
+        let Some(part) = bank.part.as_ref().filter(|p| p.designed) else { continue };
         let of_stock =
             part.battery.as_ref().and_then(|name| site.stock.batteries.iter().find(|b| b.name == *name));
         let volts = part.unit.unwrap_or(bank.nominal).get::<volt>();
@@ -302,25 +338,4 @@ fn holder_words(guard: &Guard, specified: bool) -> String {
         Supply::PerPole(..) | Supply::AcOnly | Supply::NotStated => String::new(),
     };
     format!("holder for {} {} A{volts}", device.family, digits(device.rating.get::<ampere>()))
-}
-
-/// The sum of what feeds a board, or of its loads, whichever is greater (R8).
-fn busbar_need(site: &Site, plan: &Plan, board: &Board) -> f64 {
-    let (mut fed, mut drawn) = (0.0, 0.0);
-    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-        let Some(planned) = planned else { continue };
-        if circuit.from != board.name && circuit.to != board.name {
-            continue;
-        }
-        let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
-        let current = planned.judgement.current.get::<ampere>();
-        let other = if circuit.to == board.name { &circuit.from } else { &circuit.to };
-        let charges = site.chargers.iter().any(|c| c.name == *other);
-        if towards || charges {
-            fed += planned.fitted.first().map_or(current, |f| f.guard.device.rating.get::<ampere>());
-        } else {
-            drawn += current;
-        }
-    }
-    f64::max(fed, drawn)
 }

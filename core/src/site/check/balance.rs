@@ -1,0 +1,65 @@
+//! What comes in against what is taken out, month by month (R10, R21).
+
+use alloc::format;
+use alloc::string::String;
+use alloc::vec::Vec;
+
+use uom::si::energy::watt_hour;
+
+use super::At;
+use crate::site::energy::Demand;
+use crate::site::finding::{Findings, digits};
+use crate::site::plant_text::MONTHS;
+use crate::site::supply::{arrays_of, generators_of};
+use crate::site::system::Site;
+
+/// Every bank on the mean day of each month.
+pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
+    for demand in demands {
+        let Some((index, bank)) = demand.banks.first().and_then(|&b| Some((b, site.banks.get(b)?))) else {
+            continue;
+        };
+        let mut at = At::new(found, format!("bank \"{}\"", bank.name), bank.line);
+        let charged = site.chargers.iter().any(|c| c.bank.is_some_and(|b| demand.banks.contains(&b)));
+        if !charged {
+            // Told as a bank without charge.
+            continue;
+        }
+        let arrays = arrays_of(site, index);
+        let others = generators_of(site, index).get::<watt_hour>();
+        if arrays.is_none() && others <= 0.0 {
+            at.unmade(
+                ("R10", "energy-not-checked"),
+                if site.arrays.is_empty() {
+                    "energy of the day: what its sources bring is not known; state hours or daily of a generator"
+                } else {
+                    "energy of the day: the sun is not known; write [weather] with in_plane"
+                },
+            );
+            continue;
+        }
+        let mut short: Vec<String> = Vec::new();
+        let mut worst = f64::INFINITY;
+        for (month, day) in demand.mean.iter().enumerate() {
+            let sun = arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, |e| e.get::<watt_hour>());
+            let (brought, taken) = (sun + others, day.total.get::<watt_hour>());
+            if taken <= 0.0 {
+                continue;
+            }
+            worst = worst.min(brought / taken);
+            if brought < taken {
+                let name = MONTHS.get(month).copied().unwrap_or("");
+                short.push(format!("{name} {} of {} Wh", digits(brought), digits(taken)));
+            }
+        }
+        if short.is_empty() {
+            at.pass("R10", &format!("in the worst month {} times what is taken out comes in", digits(worst)));
+        } else {
+            at.nonconforming(
+                ("R10", "energy-short"),
+                format!("on the mean day less comes in than is taken out: {}", short.join(", ")),
+                "use a larger array, less load in those months, or a generator for longer",
+            );
+        }
+    }
+}
