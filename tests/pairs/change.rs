@@ -42,7 +42,9 @@ fn the_changed_site_is_the_well_built_one_with_four_sections_more() {
     assert_eq!(before.next(), None, "it leaves nothing out");
     // A header may be taken for the one that follows it in the file before.
     let headers = |text: &str, header: &str| text.lines().filter(|l| l.starts_with(header)).count();
-    for (header, more) in [("[[inverter]]", 1), ("[[load]]", 2), ("[[circuit]]", 1), ("[[circuit.device]]", 1)] {
+    for (header, more) in
+        [("[[inverter]]", 1), ("[[load]]", 2), ("[[circuit]]", 1), ("[[circuit.device]]", 1)]
+    {
         assert_eq!(headers(CHANGE, header), headers(WELL_BUILT, header) + more, "{header}");
     }
     assert!(added.contains(&r#"name = "workshop inverter""#));

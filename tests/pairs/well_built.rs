@@ -131,7 +131,8 @@ fn any_line_taken_away_is_refused_or_inspected() {
     let lines: Vec<&str> = WELL_BUILT.lines().collect();
     let mut count: BTreeMap<&str, usize> = BTreeMap::new();
     for (index, line) in lines.iter().enumerate() {
-        let Some((key, _)) = line.split_once(" = ").filter(|(key, _)| !key.starts_with([' ', '#', '"'])) else {
+        let Some((key, _)) = line.split_once(" = ").filter(|(key, _)| !key.starts_with([' ', '#', '"']))
+        else {
             continue;
         };
         let text = [&lines[..index], &lines[index + 1..]].concat().join("\n");
