@@ -119,7 +119,7 @@ fn judged(at: &mut At<'_>, verdict: &InverterVerdict) {
             remedy,
         ),
         Suffices::NotChecked { missing } => {
-            let key = if missing == "surge rating" { "surge" } else { "surge_time" };
+            let key = if missing == "surge rating" { "surge" } else { "start_time of its loads" };
             at.unmade(("R16", "inverter-start-not-checked"), &format!("{what}: {missing}; state {key}"));
         }
     };

@@ -10,7 +10,7 @@ use super::keys::{
 };
 use super::plant::named;
 use super::plant_keys::{
-    AC, BOARD_NAME, INVERTER_NAME, PAST_DISCONNECT, POWER_FACTOR, PRIORITY, ROUTE, START_POWER,
+    AC, BOARD_NAME, INVERTER_NAME, PAST_DISCONNECT, POWER_FACTOR, PRIORITY, ROUTE, START_POWER, START_TIME,
 };
 use super::times::{is_standing, use_of};
 use crate::quantity::ElectricPotential;
@@ -20,7 +20,7 @@ use crate::site::model::{Board, LoadEntry, LoadKind};
 /// Keys of loads on DC, and of AC loads.
 const DC_ONLY: &[&Key] =
     &[&CURRENT, &START, &LEAST, &GREATEST, &STUD, &TERMINAL, &PAST_DISCONNECT, &BOARD_NAME, &ROUTE];
-const AC_ONLY: &[&Key] = &[&START_POWER, &POWER_FACTOR, &INVERTER_NAME];
+const AC_ONLY: &[&Key] = &[&START_POWER, &START_TIME, &POWER_FACTOR, &INVERTER_NAME];
 
 pub(super) fn board(entry: &mut Entry<'_, '_>) -> Option<Board> {
     let name = entry.name();
@@ -59,6 +59,7 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
     entry.ordered(&CURRENT, current, &START, start);
     let ac = entry.flag(&AC, false);
     let start_power = entry.quantity(&START_POWER);
+    let start_time = entry.quantity(&START_TIME);
     entry.ordered(&POWER, power, &START_POWER, start_power);
     let power_factor = entry.quantity(&POWER_FACTOR);
     let inverter = named(entry, &INVERTER_NAME);
@@ -93,6 +94,7 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
         inverter,
         power_factor,
         start_power,
+        start_time,
         standing: is_standing(entry, continuous),
         priority: entry.count(&PRIORITY),
         past_disconnect: entry.flag(&PAST_DISCONNECT, false),

@@ -179,6 +179,8 @@ pub(super) const PRIORITY: Key = key("priority", "a whole number", "1", count(1.
 pub(super) const AC: Key = flag("ac");
 pub(super) const INVERTER_NAME: Key = key("inverter", "the name of an inverter", "\"inverter\"", ANY);
 pub(super) const START_POWER: Key = key("start_power", "a power", "\"1440 W\"", WATTS);
+pub(super) const START_TIME: Key =
+    key("start_time", "a time", "\"0.5 s\"", Range::new(Allowed::AboveUpTo(0.0, 60.0), "s"));
 pub(super) const PAST_DISCONNECT: Key = flag("past_disconnect");
 
 // Readings
