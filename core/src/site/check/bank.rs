@@ -200,14 +200,14 @@ fn cold(
         return;
     }
     let daily = demand.map(|d| d.greatest_day().charge(bank.nominal)).filter(|q| q.value > 0.0);
-    let left = cold_fraction(chemistry, coldest).map_or(0.5, |f| f.value.get::<ratio>());
+    let left = capacity_left(chemistry, coldest).ok();
     let lasts = daily.and_then(|daily_demand| {
         cold_spell(&ColdSpell {
             chemistry,
             capacity: bank.capacity,
             start: StateOfCharge::new(1.0).ok()?,
             temperature: coldest,
-            cold_fraction: Ratio::new::<ratio>(left),
+            cold_fraction: left?.value,
             daily_demand,
             margin,
         })
