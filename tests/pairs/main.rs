@@ -7,6 +7,7 @@ mod ampacity_iec;
 mod ampacity_us;
 mod badly_built;
 mod bank;
+mod change;
 mod cli;
 mod compare;
 mod device;
@@ -33,6 +34,7 @@ mod reading;
 mod schema;
 mod start;
 mod trust;
+mod well_built;
 
 use std::collections::{BTreeMap, BTreeSet};
 
