@@ -6,6 +6,7 @@ use std::process::Command;
 use std::sync::OnceLock;
 
 use crate::badly_built::{BADLY_BUILT, HERON_POINT};
+use crate::document::Document;
 
 /// The example, built once in the way the tests are.
 fn program() -> &'static Path {
@@ -107,12 +108,14 @@ fn what_is_no_site_file_is_refused_in_one_sentence() {
 
 #[test]
 fn two_files_are_compared() {
-    let same = [PathBuf::from("--compare"), example("heron_point.toml"), example("heron_point.toml")];
+    let same = [PathBuf::from("--compare"), example("badly_built.toml"), example("badly_built.toml")];
     assert_eq!(run(&same), (0, "nothing differs\n".to_string(), String::new()));
-    let (larger, _) = changed("larger_pump.toml", "power = \"110 W\"", "power = \"220 W\"");
-    let (status, out, err) = run([PathBuf::from("--compare"), example("heron_point.toml"), larger.clone()]);
+    let site = |amps: &str| Document::run("iec").with("load", &format!("current = '{amps}'")).to_string();
+    let smaller = file("compare_smaller.toml", site("10 A").as_bytes());
+    let larger = file("compare_larger.toml", site("12 A").as_bytes());
+    let (status, out, err) = run([PathBuf::from("--compare"), smaller, larger.clone()]);
     assert_eq!((status, err.as_str()), (1, ""));
-    assert!(out.contains("~ circuit \"pump\", current: "), "{out}");
+    assert!(out.contains("~ circuit \"run\", current: 10 A → 12 A"), "{out}");
     is_refused(&[PathBuf::from("--compare"), larger.clone()], &[&["two site files to compare"]]);
     let bad = file("compare_bad.toml", b"format = 1\n");
     let (status, out, err) = run([PathBuf::from("--compare"), larger, bad]);

@@ -70,7 +70,9 @@ fn an_added_inverter_shows_feeder_fuse_and_drop() {
         assert_eq!(change(&changes.circuits, "circuit \"inverter feed\"", what).earlier, None);
     }
     assert!(!changes.purchases.is_empty());
-    assert!(changes.purchases.iter().all(|c| !c.why_earlier.is_empty() || !c.why_later.is_empty()));
+    let cable =
+        changes.purchases.iter().find(|c| c.later.as_deref().is_some_and(|t| t.contains("inverter feed")));
+    assert!(cable.is_some_and(|c| !c.why_later.is_empty()), "{:#?}", changes.purchases);
     let text = changes.to_string();
     assert!(text.lines().any(|l| l.starts_with("  ~ circuit \"feeder\", current: 10 A → ")), "{text}");
     // One line a change, and a heading a group.
@@ -115,6 +117,21 @@ fn findings_come_go_and_change_their_severity() {
     assert!(found.later.as_deref().is_some_and(|t| t.starts_with("DANGER ")), "{found}");
     assert_eq!(change(&fine.compare(&above).findings, place, "current-above-design").later, None);
     assert_eq!(change(&new.readings, "reading \"a\"", "amps").later.as_deref(), Some("11 A above"));
+}
+
+/// Two more days of autonomy: the bank that is designed, and why.
+#[test]
+fn a_design_that_grows_tells_its_layout_and_need() {
+    let longer = HERON_POINT.replacen("autonomy = \"4 d\"", "autonomy = \"6 d\"", 1);
+    assert_ne!(longer, HERON_POINT);
+    let changes = report(&longer).compare(&report(HERON_POINT));
+    let layout = change(&changes.system, "bank \"house\"", "layout");
+    assert!(layout.earlier.is_some() && layout.later.is_some() && layout.earlier != layout.later, "{layout}");
+    assert!(
+        layout.why_earlier.contains("Ah are needed") && layout.why_later.contains("Ah are needed"),
+        "{layout}"
+    );
+    assert_ne!(layout.why_earlier, layout.why_later);
 }
 
 #[test]

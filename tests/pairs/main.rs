@@ -21,6 +21,13 @@ mod pair;
 mod part;
 mod path;
 mod place;
+mod plant_array;
+mod plant_bank;
+mod plant_charge;
+mod plant_design;
+mod plant_load;
+mod plant_place;
+mod plant_source;
 mod reading;
 mod start;
 mod trust;
@@ -54,6 +61,12 @@ fn pairs() -> Vec<Pair> {
         start::pairs(),
         trust::pairs(),
         reading::pairs(),
+        plant_array::pairs(),
+        plant_bank::pairs(),
+        plant_charge::pairs(),
+        plant_load::pairs(),
+        plant_place::pairs(),
+        plant_source::pairs(),
     ]
     .into_iter()
     .flatten()

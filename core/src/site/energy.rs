@@ -162,7 +162,7 @@ pub(super) fn load_of(site: &Site, entry: &LoadEntry, nominal: ElectricPotential
     let start = entry
         .start_power
         .filter(|start| entry.ac && *start > power && power.value > 0.0)
-        .map(|start| Start::one_by_one(start / power, None))
+        .map(|start| Start::one_by_one(start / power, entry.start_time))
         .transpose()?;
     Ok(Load {
         draw,

@@ -123,6 +123,8 @@ pub struct LoadEntry {
     pub power_factor: Option<Ratio>,
     /// `start_power = "1440 W"` of an AC load.
     pub start_power: Option<Power>,
+    /// `start_time = "0.5 s"` of that.
+    pub start_time: Option<Time>,
     /// `standing = true`: always on, by its nature: monitor, alarm, controller.
     pub standing: bool,
     /// `priority = 1`: shed last.

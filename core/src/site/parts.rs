@@ -183,7 +183,7 @@ impl BankPart {
     /// A bank of which nothing is stated but a name.
     pub(super) fn unstated(name: String) -> Self {
         Self {
-            name: name,
+            name,
             line: 0,
             battery: None,
             chemistry: None,

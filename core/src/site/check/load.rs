@@ -6,7 +6,7 @@ use uom::si::energy::watt_hour;
 use uom::si::power::watt;
 
 use super::At;
-use crate::converter::{Inverter, InverterVerdict, Suffices, Surge};
+use crate::converter::{Inverter, InverterDemand, InverterVerdict, Suffices, Surge};
 use crate::load::HIGH_STANDING_SHARE;
 use crate::quantity::{ElectricPotential, ElectricalResistance, Time};
 use crate::site::complete::inverter::demand;
@@ -70,6 +70,11 @@ pub(super) fn loads(site: &Site, demands: &[Demand], found: &mut Findings) {
     }
 }
 
+/// How long a start lasts where nothing tells it. Common practice, no source.
+fn start_time() -> Time {
+    Time::new::<uom::si::time::second>(2.0)
+}
+
 /// Every inverter against its loads.
 pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
     for (index, entry) in site.inverters.iter().enumerate() {
@@ -86,9 +91,10 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
         let lowest = planned.map_or_else(ElectricPotential::default, |p| p.judgement.end_voltage);
         let asked = demand(site, lowest, ac_loads(site, index));
         let inverter = inverter_of(entry, lowest).map(|plain| with_surge(entry, plain));
-        if let (Ok(inverter), Ok(asked)) = (inverter, &asked)
+        if let (Ok(inverter), Ok(asked)) = (inverter, asked)
             && asked.power.value > 0.0
-            && let Ok(verdict) = inverter.judge(asked)
+            && let Ok(verdict) =
+                inverter.judge(&InverterDemand { duration: asked.duration.or(Some(start_time())), ..asked })
         {
             judged(&mut at, &verdict);
         }
@@ -97,41 +103,44 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
 }
 
 fn with_surge(entry: &InverterEntry, plain: Inverter) -> Inverter {
-    // Without a stated time the maker's word for a surge is taken for the seconds of a start; common practice, no source.
-    let duration = entry.part.surge_time.unwrap_or_else(|| Time::new::<uom::si::time::second>(2.0));
+    // Without a stated time the maker's word for a surge is taken for the seconds of a start.
+    let duration = entry.part.surge_time.unwrap_or_else(start_time);
     Inverter { surge: entry.surge.map(|power| Surge { power, duration }), ..plain }
 }
 
 fn judged(at: &mut At<'_>, verdict: &InverterVerdict) {
-    let mut one = |what: &str, slug: &'static str, suffices: Suffices, remedy: &'static str| match suffices {
+    let mut one = |what: &str,
+                   slug: (&'static str, &'static str),
+                   suffices: Suffices,
+                   remedy: &'static str| match suffices {
         Suffices::Yes { given, asked } => at.pass(
             "R16",
             &format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
         ),
         Suffices::No { given, asked } => at.nonconforming(
-            ("R16", slug),
+            slug,
             format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
             remedy,
         ),
         Suffices::TooShort { given, asked } => at.nonconforming(
-            ("R16", slug),
+            slug,
             format!("{what}: for {} s, the start lasts {} s", digits(given.value), digits(asked.value)),
             remedy,
         ),
         Suffices::NotChecked { missing } => {
-            let key = if missing == "surge rating" { "surge" } else { "surge_time" };
+            let key = if missing == "surge rating" { "surge" } else { "start_time of its loads" };
             at.unmade(("R16", "inverter-start-not-checked"), &format!("{what}: {missing}; state {key}"));
         }
     };
     one(
         "continuous power against its loads",
-        "inverter-overloaded",
+        ("R16", "inverter-overloaded"),
         if verdict.power.passes() { verdict.apparent } else { verdict.power },
         "use a larger inverter, or fewer loads at a time",
     );
     one(
         "power while the largest load starts",
-        "inverter-start-too-large",
+        ("R16", "inverter-start-too-large"),
         verdict.start,
         "use an inverter with more surge, or a soft start",
     );

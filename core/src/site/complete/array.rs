@@ -61,7 +61,7 @@ pub(super) fn take(document: &Document, site: &mut Site, problems: &mut Vec<Prob
         }
         let controller = match stated.controller.as_ref() {
             Some(name) => site.controllers.iter().position(|c| c.name == *name),
-            None => (site.controllers.len() == 1).then_some(0),
+            None => led_to(site, &stated.name).or((site.controllers.len() == 1).then_some(0)),
         };
         let (series, strings) = match (stated.modules, stated.series, stated.strings) {
             (_, Some(series), Some(strings)) => (series, strings),
@@ -88,6 +88,20 @@ pub(super) fn take(document: &Document, site: &mut Site, problems: &mut Vec<Prob
         });
     }
     open
+}
+
+/// The controller that an array's own circuits lead to, through a board between or not.
+fn led_to(site: &Site, array: &str) -> Option<usize> {
+    let mut here = array;
+    // A board between array and controller, and no chain of them without end.
+    for _ in 0..4 {
+        let circuit = site.circuits.iter().find(|c| c.from == here)?;
+        if let Some(found) = site.controllers.iter().position(|c| c.name == circuit.to) {
+            return Some(found);
+        }
+        here = &circuit.to;
+    }
+    None
 }
 
 /// What is asked of an array.

@@ -147,7 +147,18 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
 
 /// The board that takes what states none: the first of the document, else one that is made.
 fn board_name(site: &Site) -> String {
-    if let Some(board) = site.boards.first() {
+    // The one that a bank leads to, by its circuit or by its own word, comes before an array's.
+    let of_bank = |name: &String| {
+        site.banks.iter().filter(|b| b.is_battery()).any(|b| {
+            b.part.as_ref().and_then(|p| p.board.as_ref()) == Some(name)
+                || site
+                    .circuits
+                    .iter()
+                    .any(|c| (c.from == b.name && c.to == *name) || (c.to == b.name && c.from == *name))
+        })
+    };
+    let first = site.boards.iter().find(|b| of_bank(&b.name)).or_else(|| site.boards.first());
+    if let Some(board) = first {
         return board.name.clone();
     }
     let taken = |name: &str| {

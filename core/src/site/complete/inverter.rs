@@ -81,10 +81,15 @@ pub(in crate::site) fn demand<'a>(
         Vec<Power>,
     ) = Default::default();
     let nothing = Power::default();
+    // The longest start counts; one that is not stated makes none of them known.
+    let mut duration: Option<Time> = Some(Time::default());
     for entry in loads {
         let load = load_of(site, entry, nominal)?;
         occasions.push(load.occasion(None)?);
         watts.push(load.power_at(nominal)?);
+        if let Some(start) = load.start {
+            duration = duration.zip(start.duration).map(|(a, b)| if b > a { b } else { a });
+        }
         let apparent = load.apparent_at(nominal)?;
         amperes.push(apparent);
         extra.push(apparent * load.start_extra()?);
@@ -96,7 +101,7 @@ pub(in crate::site) fn demand<'a>(
         power: running,
         apparent: apparent.running,
         starting: apparent.with_start.sum,
-        duration: None,
+        duration,
         ambient: Some(site.ambient.1),
     })
 }

@@ -281,11 +281,11 @@ fn problem(line: u32, place: String, text: impl Into<String>) -> Problem {
     Problem { line, place, text: text.into() }
 }
 
-/// The outputs that charge, and the banks they charge: the one named, else the only one.
+/// The outputs that charge, and the banks they charge: the one named, else the one they are joined to, else the only one.
 fn add_chargers(site: &mut Site) {
-    let bank = |name: Option<&String>| match name {
+    let bank = |name: Option<&String>, own: &str| match name {
         Some(name) => site.banks.iter().position(|b| b.name == *name),
-        None => site.banks.iter().position(BankEntry::is_battery),
+        None => joined_bank(site, own).or_else(|| site.banks.iter().position(BankEntry::is_battery)),
     };
     let mut chargers = Vec::new();
     for (index, controller) in site.controllers.iter().enumerate() {
@@ -295,7 +295,7 @@ fn add_chargers(site: &mut Site) {
             kind: ChargerKind::Controller(index),
             limit: controller.output,
             charging: controller.charging,
-            bank: bank(controller.bank.as_ref()),
+            bank: bank(controller.bank.as_ref(), &controller.name),
             stud: controller.stud,
         });
     }
@@ -306,11 +306,38 @@ fn add_chargers(site: &mut Site) {
             kind: ChargerKind::Generator(index),
             limit: generator.output,
             charging: generator.charging,
-            bank: bank(generator.bank.as_ref()),
+            bank: bank(generator.bank.as_ref(), &generator.name),
             stud: generator.stud,
         });
     }
     site.chargers = chargers;
+}
+
+/// The bank that a source's own circuits lead to.
+fn joined_bank(site: &Site, own: &str) -> Option<usize> {
+    let is_inlet = |name: &str| {
+        site.controllers.iter().any(|c| c.name == name) || site.converters.iter().any(|c| c.name == name)
+    };
+    let mut seen: Vec<&str> = alloc::vec![own];
+    let mut next = 0;
+    while let Some(&here) = seen.get(next) {
+        next += 1;
+        if let Some(bank) = site.banks.iter().position(|b| b.is_battery() && b.name == here) {
+            return Some(bank);
+        }
+        for circuit in &site.circuits {
+            // What enters a controller or converter does not come out on the same side.
+            let other = match (circuit.from == here, circuit.to == here && here != own) {
+                (true, _) if !is_inlet(&circuit.to) => circuit.to.as_str(),
+                (_, true) if !is_inlet(&circuit.from) => circuit.from.as_str(),
+                _ => continue,
+            };
+            if !seen.contains(&other) {
+                seen.push(other);
+            }
+        }
+    }
+    None
 }
 
 /// Outputs of converters and arrays as sources of their own networks.
