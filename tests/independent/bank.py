@@ -11,7 +11,7 @@ SAGS_TO = {"flooded": "flooded lead-acid"}                # row of the Peukert e
 # IEC 62485-2, mA/Ah: recalled, not printed. Equalising or absorption counts.
 GAS_mA_per_Ah = {"flooded": 20.0, "agm": 8.0}
 # Rest volts of a cell at the charge that a disconnect leaves (flooded 20 %, agm and lfp 10 %); volts that it sags per
-# C-rate at 25 °C, twice as much 60 K below. Printed nowhere: found by varying a file, so that comparing proves their use.
+# C-rate at 25 °C, twice as much 60 K below. Printed nowhere, found by varying a file: comparing proves their use.
 LEFT_V = {"flooded": 2.0044, "agm": 1.9934, "lfp": 3.18}
 SAG_Vh = {"flooded": 0.72, "agm": 0.45, "lfp": 0.27}
 ROWS = {"flooded": "flooded, deep cycle", "agm": "AGM", "gel": "gel"}
@@ -33,28 +33,31 @@ class Capacity:
 
     def __init__(self, plant, year):
         self.bank, site = plant.bank, plant.site
+        self.margin = value(site["site"].get("margin", MARGIN))
+        self.depth = value(self.bank.get("depth", WINDOW if self.bank["chemistry"] == "lfp" else DEPTH))
+        self.daily_depth = value(self.bank.get("daily_depth", DAILY_DEPTH))
         self.day = year.greatest_day_Ah()
         self.days = value(site["site"]["autonomy"])
         self.autonomy = self.day * self.days
         self.coldest = value(self.bank["temperature"][0])
         self.lithium = self.bank["chemistry"] == "lfp"
         if self.lithium:
-            self.over_window = self.autonomy / WINDOW
+            self.over_window = self.autonomy / self.depth
             self.aged_and_cold = self.over_window / LITHIUM_LEFT / LITHIUM_COLD
-            self.needed = self.aged_and_cold * (1 + MARGIN)
+            self.needed = self.aged_and_cold * (1 + self.margin)
         else:
-            self.a = self.autonomy / DEPTH
-            self.b = self.day / DAILY_DEPTH
+            self.a = self.autonomy / self.depth
+            self.b = self.day / self.daily_depth
             self.c = self.autonomy / END_OF_LIFE
             self.factor = temperature_factor(self.coldest)
-            self.needed = max(self.a, self.b, self.c) * self.factor * (1 + MARGIN)
+            self.needed = max(self.a, self.b, self.c) * self.factor * (1 + self.margin)
         self.drawn_in = self.needed / plant.running_amps()
 
     def lasts(self, held):
-        return held * (WINDOW if self.lithium else DEPTH) / self.day
+        return held * self.depth / self.day
 
     def holds(self, battery):
-        """A battery's capacity when drawn in the functional hours, never above its rating; Peukert, greatest exponent."""
+        """A battery's capacity drawn in the functional hours, never above its rating; Peukert, greatest exponent."""
         row = SAGS_TO[battery["chemistry"]]
         exponent = cell("battery.toml", "peukert-exponent-ranges", row, "high")
         ratio = min(1.0, self.drawn_in / value(battery["rate"]))
@@ -89,8 +92,8 @@ def usual(bank, stage):
     if bank["chemistry"] == "lfp":
         low, high = LFP_CELL_V[stage]
     else:
-        row = ROWS[bank["chemistry"]]
-        low, high = (cell("battery.toml", "lead-acid-charge-voltages", row, f"{stage}_{end}") for end in ("low", "high"))
+        row, name = ROWS[bank["chemistry"]], "lead-acid-charge-voltages"
+        low, high = (cell("battery.toml", name, row, f"{stage}_{end}") for end in ("low", "high"))
     return cells(bank) * low, cells(bank) * high
 
 
@@ -111,10 +114,9 @@ def rate(bank, column):
     return cell("battery.toml", "charge-rates", RATES[bank["chemistry"]], column)
 
 
-def recharge_h(bank, amps, efficiency, start, knee=None):
-    """Hours from a state of charge to full: constant current; lead-acid above the knee takes less and less."""
-    missing = (1 - start) * value(bank["capacity"])
-    return missing / (efficiency * amps)
+def recharge_h(bank, amps, efficiency, depth):
+    """Hours from a depth of discharge to full at constant current: no tail, which no report of a plant here has."""
+    return depth * bank["capacity"] / (efficiency * amps)
 
 
 def shares(amps, strings, string_ohm, link_ohm, diagonal=True):

@@ -128,7 +128,7 @@ class Plant:
 
     def starting(self):
         """Apparent power of all while the one starts that adds most."""
-        extra = [(value(l["start_power"]) - watts(l, self.nominal)) / l.get("power_factor", 1.0)
+        extra = [(value(l["start_power"]) - value(l["power"])) / l.get("power_factor", 1.0)
                  for l in self.ac_loads() if "start_power" in l]
         return self.apparent() + max(extra, default=0.0)
 

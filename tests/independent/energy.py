@@ -44,6 +44,10 @@ def watts(load, nominal):
     return load.get("count", 1) * each
 
 
+def share_of_week(load):
+    return load.get("days_per_week", 7) / 7
+
+
 class Year:
     """Twelve mean days, Wh, of one bank."""
 
@@ -56,15 +60,16 @@ class Year:
         self.means = [value(t) for t in weather.get("temperature", [])] or [DUTY_AT] * 12
         self.sun = [value(s) for s in weather.get("in_plane", [])] or [0.0] * 12
 
-    def of_loads(self, month, ac):
+    def of_loads(self, month, ac, every_day=False):
         return sum(watts(load, self.nominal) * hours(load) * duty(load, self.means[month], self.hottest)
+                   * (1.0 if every_day else share_of_week(load))
                    for load in self.loads
                    if load.get("ac", False) == ac and MONTHS[month] in load.get("months", MONTHS))
 
-    def of_inverters(self, month):
+    def of_inverters(self, month, every_day=False):
         """The stated efficiency is at full power, the idle draw in it; no load in a month, no draw."""
         inverter = self.plant.inverter
-        out = self.of_loads(month, ac=True)
+        out = self.of_loads(month, True, every_day)
         if not inverter or not out:
             return 0.0
         power, idle = value(inverter["power"]), value(inverter.get("idle", 0.0))
@@ -74,18 +79,20 @@ class Year:
         controller = self.plant.controller
         return 24 * value(controller["idle"]) if controller else 0.0
 
-    def used(self, month):
-        return self.of_loads(month, ac=False) + self.of_inverters(month) + self.of_controllers()
+    def used(self, month, every_day=False):
+        return self.of_loads(month, False, every_day) + self.of_inverters(month, every_day) + self.of_controllers()
 
-    def taken(self, month):
-        return self.used(month) / (1 - LOST_IN_WIRING)
+    def taken(self, month, every_day=False):
+        """With `every_day`, of a day on which every load of the month runs."""
+        return self.used(month, every_day) / (1 - value(self.plant.site["site"].get("losses", LOST_IN_WIRING)))
 
     def of_arrays(self, month):
         array, controller = self.plant.array, self.plant.controller
         if not array:
             return 0.0
         power = value(array["module"]["power"]) * array["series"] * array["strings"]
-        return power * self.sun[month] * self.warm(month) * self.efficiency()
+        lit = 1 - value(array.get("shade", 0.0))
+        return power * lit * self.sun[month] * self.warm(month) * self.efficiency()
 
     def efficiency(self):
         return (1 - LOST_BEFORE_CONTROLLER) * value(self.plant.controller["efficiency"]) * self.stored()
@@ -107,7 +114,7 @@ class Year:
         return self.of_arrays(month) + self.of_others()
 
     def greatest_day_Ah(self):
-        return max(self.taken(m) for m in range(12)) / self.nominal
+        return max(self.taken(m, every_day=True) for m in range(12)) / self.nominal
 
     def worst_month(self):
         return min(range(12), key=lambda m: self.given(m) / self.taken(m))
@@ -142,7 +149,7 @@ class Sun:
         return self.series * value(self.module["voc"]) * (1 + self.per_K("voc_coefficient") * (self.hot_cells() - 25))
 
     def hot_Vmp(self):
-        """Power falls as volts times amperes, so volts by the difference of both coefficients; aged, and less wiring."""
+        """Power falls as volts times amperes, so volts by the difference of both coefficients; aged, less wiring."""
         slope = self.per_K("power_coefficient") - self.per_K("isc_coefficient")
         warm = 1 + slope * (self.hot_cells() - 25)
         return self.series * value(self.module["vmp"]) * warm * (1 - LOST_VOLTS) * (1 - AGED_VOLTS)
@@ -151,10 +158,14 @@ class Sun:
         return self.series * value(self.module["vmp"])
 
     def bright_Isc(self):
-        return self.strings * value(self.module["isc"]) * IRRADIANCE
+        return self.strings * value(self.module["isc"]) * self.gain() * IRRADIANCE
+
+    def gain(self):
+        """From the rear: counted in currents, not in energy."""
+        return 1 + value(self.module.get("rear_gain", 0.0))
 
     def Imp(self):
-        return self.strings * value(self.module["imp"])
+        return self.strings * value(self.module["imp"]) * self.gain()
 
     def watts(self):
         return self.series * self.strings * value(self.module["power"])

@@ -71,11 +71,15 @@ def smaller(out, plant, printed, assumed, finished, size, reason, verdict):
     changed = printed | {name: printed[name] | {"size": size}}
     network, _, of_array = plant.network(changed, assumed)
     circuit = next(c for c in [*network.circuits, *filter(None, [of_array])] if c.name == name)
-    if reason.label.startswith(("voltage", "least")):
-        ours = Expectation(network, circuit, finished.network)
-    else:
+    if not reason.label.startswith(("voltage", "least")):
         ours = copy.copy(finished)                        # told with the currents of the size that was taken
         ours.circuit = circuit
+    elif isinstance(finished, ArrayRun):
+        ours = ArrayRun(network, circuit, Sun(plant, plant.year))
+    elif isinstance(finished, ChargerRun):
+        ours = ChargerRun(network, circuit)
+    else:
+        ours = Expectation(network, circuit, finished.network)
     verdict(out, f"{name}: {size}", reason, ours)
 
 
@@ -118,14 +122,15 @@ def boards(out, plant, network, charger, text):
 def bearings(out, plant, text):
     """What loads and sources bear and reach."""
     highest = plant.bank["highest"]
-    for kind, name, bears, reaches in re.findall(r'R3 (load|inverter) "(.*?)": bears ([\d.]+) V, the bank reaches ([\d.]+) V',
-                                                 text):
+    line = r'R3 (load|inverter) "(.*?)": bears ([\d.]+) V, the bank reaches ([\d.]+) V'
+    for kind, name, bears, reaches in re.findall(line, text):
         item = plant.inverter if kind == "inverter" else next(l for l in plant.site["load"] if l["name"] == name)
         out.number(f"{kind} {name}", "bears, V", amount(bears), value(item["greatest"]))
         out.number(f"{kind} {name}", "the bank reaches, V", amount(reaches), highest)
     head = re.search(r'^bank ".*?": .*? ([\d.]+) V, ([\d.]+) Ah, from ([\d.]+) V at cut-off to ([\d.]+) V', text, re.M)
-    for word, printed, ours in zip(("nominal, V", "capacity, Ah", "cut-off, V", "highest, V"), head.groups(),
-                                   (plant.nominal, plant.bank["capacity"], plant.bank["cut_off"], highest), strict=True):
+    held = (plant.nominal, plant.bank["capacity"], plant.bank["cut_off"], highest)
+    for word, printed, ours in zip(("nominal, V", "capacity, Ah", "cut-off, V", "highest, V"), head.groups(), held,
+                                   strict=True):
         out.number("head", word, amount(printed), ours)
     cold = re.search(r'into ".*?": reaches ([\d.]+) V cold', text)
     if cold:
@@ -183,7 +188,8 @@ def under_load(out, plant, network, charger, of_array, text):
         found = re.search(r"each string open, .*?, ([\d.]+) to ([\d.]+) V", text)
         for word, shown, held in zip(("low", "high"), found.groups(), sheet.span(sun.hot_Voc(), sun.cold_Voc())):
             out.number("sheet", f"open string, {word}, V", amount(shown), held)
-        out.number("sheet", "array in full sun, A", amount(re.search(r"gives about ([\d.]+) A", text)[1]), sun.Imp())
+        out.number("sheet", "array in full sun, A", amount(re.search(r"gives about ([\d.]+) A", text)[1]),
+                   sun.Imp() / sun.gain())
 
 
 def rested(out, plant, network, text):
@@ -240,8 +246,9 @@ def buying(out, plant, printed, network, of_array, text):
                    1.25 * max(network.greatest_amps.values()) / plant.bank["strings"])
     devices(out, plant, printed, lines)
     chosen(out, plant, lines)
-    out.number("to buy", "labels", (next(l[0] for l in lines if l[2].startswith("label")), 0), count_labels(plant, printed))
-    out.number("to buy", "labels listed", (said.labels(text), 0), count_labels(plant, printed))
+    labels = count_labels(plant, printed)
+    out.number("to buy", "labels", (next(l[0] for l in lines if l[2].startswith("label")), 0), labels)
+    out.number("to buy", "labels listed", (said.labels(text), 0), labels)
     if total:
         priced = [l[3] for l in lines if l[3] is not None]
         found = re.match(r"\s*([\d.]+) in all for what has a price; (\d+) of (\d+) lines have none", total)

@@ -2,12 +2,6 @@
 
 import re
 
-from report import amount
-
-
-def section(text, title):
-    return text.split(f"\n{title}", 1)[1].split("\n\n\n", 1)[0] if f"\n{title}" in text else ""
-
 
 def plant(text):
     """Entries of "Bank, array and sources" by header: lists of texts by label, steps by their own label."""
@@ -92,7 +86,3 @@ def digits(text):
     """A figure and half a unit of its last printed digit."""
     decimals = len(text.partition(".")[2])
     return float(text), 0.5 * 10**-decimals
-
-
-def figure(text):
-    return amount(text)

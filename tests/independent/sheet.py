@@ -1,17 +1,15 @@
-"""Commissioning sheet: currents and millivolts that a meter shall read, their tolerances, joints, set points in figures.
+"""Commissioning sheet: currents and millivolts that a meter shall read, their tolerances, joints, pre-charge.
 
 The sheet names its meter: 0.5 % and two last digits; 0.1 mV up to 600 mV, 10 mV up to 60 V, 100 mV above (the last not
-printed); current in line 1 % and two of 0.01 A up to 10 A, clamp 2 % and two of 0.1 A. A load may draw 10 % more or less
-(not printed).
+printed); current in line 1 % and two of 0.01 A up to 10 A, clamp 2 % and two of 0.1 A. A load may draw 10 % more or
+less (not printed).
 """
 
 import math
 
-from plant import Circuit
 from tables import value
 
 SPREAD = 0.1
-FULL_BATTERY_V = 2.2
 
 
 def meter_V(volts):
@@ -51,10 +49,6 @@ def solve(network, root, order, running, ohms):
     return through, volts
 
 
-def cold_and_bare(circuit: Circuit):
-    return circuit.cold_ohms()
-
-
 class Row:
     """One circuit under load. `hot`: resistance of its path at the temperatures of the worst hour."""
 
@@ -71,10 +65,8 @@ class Row:
             self.tolerance = SPREAD * self.amps + meter_A(self.amps)
             most = self.amps + meter_A(self.amps)
             path = list(network.path(root, circuit.ends[1]))
-            far = circuit.ends[1]
             lowest = network.nominal - sum(through[c.name] * hot(network, c) for c in path)
             highest = network.nominal - sum(through[c.name] * c.cold_ohms() for c in path)
-            self.far = far
             self.volts = (lowest - meter_V(lowest), highest + meter_V(lowest))
         self.millivolts = 1000 * self.amps * circuit.ohms(20)
         # The meter's error of volts is that of the expected reading, not of the reading at the greater current.

@@ -63,14 +63,14 @@ def steps(out, where, said_steps, ours):
 def bank(out, plant, told, text):
     held, where, b = plant.capacity, f"bank {plant.bank['name']}", plant.bank
     ours = {"demand of the greatest day": held.day, "days without charge": held.days,
-            "demand of the autonomy": held.autonomy, "margin": banks.MARGIN, "capacity needed": held.needed}
+            "demand of the autonomy": held.autonomy, "margin": held.margin, "capacity needed": held.needed}
     if held.lithium:
-        ours |= {"usable window": banks.WINDOW, "over the window": held.over_window,
+        ours |= {"usable window": held.depth, "over the window": held.over_window,
                  "left at the end of life": banks.LITHIUM_LEFT, "left in the cold": banks.LITHIUM_COLD,
                  "at the end of life, in the cold": held.aged_and_cold}
     else:
-        ours |= {"greatest depth": banks.DEPTH, "a: autonomy over greatest depth": held.a,
-                 "daily depth": banks.DAILY_DEPTH, "b: day over daily depth": held.b,
+        ours |= {"greatest depth": held.depth, "a: autonomy over greatest depth": held.a,
+                 "daily depth": held.daily_depth, "b: day over daily depth": held.b,
                  "left at the end of life": banks.END_OF_LIFE,
                  "c: autonomy over what is left at the end of life": held.c,
                  "the greatest of a, b, c": max(held.a, held.b, held.c), "temperature factor": held.factor,
@@ -79,8 +79,10 @@ def bank(out, plant, told, text):
                  "or two openings, one low and one high, of": banks.opening_cm2(b)}
     if hasattr(plant, "battery"):
         battery = plant.battery
-        label = f"one battery of {battery['capacity']} at {battery['rate']}, drawn in that time"
-        ours |= {label: held.holds(battery), "batteries in series": b["series"], "strings": b["strings"]}
+        ours |= {"batteries in series": b["series"], "strings": b["strings"]}
+        if held.drawn_in < value(battery["rate"]):
+            label = f"one battery of {battery['capacity']} at {battery['rate']}, drawn in that time"
+            ours[label] = held.holds(battery)
     steps(out, where, told["steps"], ours)
     volts = next((t for t in told["steps"] if t.startswith("nominal voltage")), None)
     if volts:
@@ -104,8 +106,9 @@ def bank(out, plant, told, text):
                        r"at least ([\d.]+) Ah for ([\d.]+) Ah a day over ([\d.]+) d", text)
     sags = hasattr(plant, "battery") and held.drawn_in < value(plant.battery["rate"])
     gives = b["strings"] * held.holds(plant.battery) if sags else b["capacity"]
-    for word, printed, ours in zip(("held", "drawn in", "rated", "needed", "a day", "days"), passed.groups(),
-                                   (gives, held.drawn_in, b["capacity"], held.needed, held.day, held.days), strict=True):
+    r12 = (gives, held.drawn_in, b["capacity"], held.needed, held.day, held.days)
+    for word, printed, ours in zip(("held", "drawn in", "rated", "needed", "a day", "days"), passed.groups(), r12,
+                                   strict=True):
         if printed or sags:
             out.number(where, f"R12 {word}", amount(printed), ours)
     if "opening" in b:
@@ -133,8 +136,8 @@ def array(out, plant, told, text):
         out.number(where, word, (float(printed), 0.05), ours)
     out.number(where, "controller, A", amount(re.search(r"([\d.]+) A", told["controller"][0])[1]),
                value(plant.controller["output"]))
-    line = re.match(r"open circuit at its coldest ([\d.]+) V, maximum power at its hottest ([\d.]+) V; short circuit of "
-                    r"the array in bright sun ([\d.]+) A", told["string"][0])
+    line = re.match(r"open circuit at its coldest ([\d.]+) V, maximum power at its hottest ([\d.]+) V; short circuit "
+                    r"of the array in bright sun ([\d.]+) A", told["string"][0])
     for word, printed, ours in zip(("cold Voc, V", "hot Vmp, V", "bright Isc, A"), line.groups(),
                                    (sun.cold_Voc(), sun.hot_Vmp(), sun.bright_Isc()), strict=True):
         out.number(where, word, amount(printed), ours)
@@ -163,7 +166,8 @@ def array(out, plant, told, text):
         "against the bank's highest charge voltage and the controller's margin": (
             sun.hot_Vmp(), plant.cold_absorption() + margin),
         "against the controller's input": (sun.bright_Isc(), value(plant.controller["input_current"])),
-        "against the controller's output": (sun.watts() / plant.nominal, value(plant.controller["output"])),
+        "against the controller's output": (
+            sun.watts() * sun.gain() / plant.nominal, value(plant.controller["output"])),
     }
     limit = {"us": 600, "iec": 1000}[plant.site["site"]["rules"]]      # 690.7 and IEC 62548: recalled, as printed
     checks["against the greatest that the rule set admits"] = (sun.cold_Voc(), limit)
@@ -207,7 +211,8 @@ def charging(out, plant, plant_said, told, text):
     words = {"absorption": "absorption", "float": "float", "equalising": "equalize"}
     for word, shown in re.findall(r"(absorption|float|equalising) ([\d.]+) V", told["voltages"][0]):
         out.number(where, f"{word}, V", amount(shown), points.get(words[word]))
-    out.number(where, "highest, V", amount(re.search(r"([\d.]+) V at its highest", told["voltages"][0])[1]), b["highest"])
+    shown = re.search(r"([\d.]+) V at its highest", told["voltages"][0])[1]
+    out.number(where, "highest, V", amount(shown), b["highest"])
     low, reconnect = re.match(r"loads at ([\d.]+) V, reconnect at ([\d.]+) V", told["disconnect"][0]).groups()
     out.number(where, "disconnect, V", amount(low), value(b.get("disconnect", b["cut_off"])))
     out.number(where, "reconnect, V", amount(reconnect), value(b.get("reconnect", 2.1 * banks.cells(b))))
@@ -236,8 +241,7 @@ def charging(out, plant, plant_said, told, text):
         found = re.match(r"([\d.]+) A at most, ([\d.]+) A for hours", told["gives"][0])
         out.number("alternator", "most, A", amount(found[1]), most)
         out.number("alternator", "for hours, A", amount(found[2]), hours)
-        depth = banks.WINDOW if b["chemistry"] == "lfp" else banks.DEPTH
         out.number("alternator", "recharge, h", said.digits(re.match(NUMBER, told["recharge"][0])[0]),
-                   banks.recharge_h(b, hours, plant.year.stored(), 1 - depth))
+                   banks.recharge_h(b, hours, plant.year.stored(), plant.capacity.depth))
     into = re.search(r"current into the bank, at most ([\d.]+) A", text)[1]
     out.number(where, "current into the bank, A", said.digits(into), most + sheet.meter_A(most))
