@@ -5,7 +5,7 @@ use std::path::{Path, PathBuf};
 use std::process::Command;
 use std::sync::OnceLock;
 
-use crate::badly_built::{BADLY_BUILT, CABIN};
+use crate::badly_built::{BADLY_BUILT, CABIN, HERON_POINT};
 
 /// The example, built once in the way the tests are.
 fn program() -> &'static Path {
