@@ -231,6 +231,11 @@ def buying(out, plant, printed, network, of_array, text):
                 out.number("to buy", f"{size} {kind}, price", (price or 0.0, 0.005), ours * stock[size])
         shown = sum(l[0] for l in lines if l[2].startswith("lug ") and f"for {size}" in l[2])
         out.number("to buy", f"lugs for {size}", (shown, 0), lugs[size])
+    for count, size in re.findall(r"(\d+) for ([\d./]+ \S+?)(?:,|$)", next(l[2] for l in lines if "sleeve" in l[2])):
+        out.number("to buy", f"sleeves for {size}", (int(count), 0), lugs.get(size, 0))
+    for volts in re.findall(r"max\. ([\d.]+) V DC?(?! , Isc)", text.split("\nLabels, by the line\n", 1)[1]):
+        if not plant.array or abs(float(volts) - Sun(plant, plant.year).cold_Voc()) > 0.01:
+            out.number("label", "greatest volts", amount(volts), plant.bank["highest"])
     sleeves = sum(l[0] for l in lines if l[2].startswith("heat-shrink"))
     out.number("to buy", "sleeves", (sleeves, 0), sum(lugs.values()))
     found = re.search(r"load-break isolator, at least ([\d.]+) V DC, ([\d.]+) A", text)
@@ -278,6 +283,9 @@ def devices(out, plant, printed, lines):
         price = next((d["price"] for d in shelf if d["family"] == family and rating in map(value, d["ratings"])), None)
         if price is not None:
             out.number("to buy", f"{kind}, price", (sum(l[3] for l in plain), 0.005), count * price)
+            for l in lines:
+                if l[2].startswith(f"{kind},") and "spare" in l[2]:
+                    out.number("to buy", f"{kind}, spare, price", (l[3], 0.005), l[0] * price)
 
 
 def chosen(out, plant, lines):
