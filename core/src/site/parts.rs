@@ -140,6 +140,8 @@ pub struct BankPart {
     pub stud: Option<Stud>,
     /// `temperature = ["5 degC", "30 degC"]` of the cells.
     pub temperature: Option<(ThermodynamicTemperature, ThermodynamicTemperature)>,
+    /// `cold_capacity = "60 %"`: part of the capacity left at its coldest, by its maker.
+    pub cold_capacity: Option<Ratio>,
     /// `depth = "80 %"`: greatest.
     pub depth: Option<Ratio>,
     /// `daily_depth = "20 %"`.
@@ -205,6 +207,7 @@ impl BankPart {
             charge_from: None,
             stud: None,
             temperature: None,
+            cold_capacity: None,
             depth: None,
             daily_depth: None,
             disconnect: None,
@@ -368,6 +371,8 @@ pub struct ControllerPart {
     pub idle: Option<Power>,
     /// Its set points.
     pub charging: Charging,
+    /// `load_dump = true`: it bears that the bank is disconnected under charge.
+    pub load_dump: Option<bool>,
     /// `bank`: name of the bank it charges.
     pub bank: Option<String>,
     /// `board`: to which its output leads, where the circuit is designed.

@@ -49,7 +49,10 @@ impl Flows {
             let Item::Charger(charger) = node.item else {
                 if amps > flow.current {
                     // By the sources, and no more by the loads.
-                    flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
+                    let loads = flow.low_current.unwrap_or(flow.current);
+                    flow.low_current = Some(loads);
+                    // A start flows the other way: it counts as far as it outgrows what the sources drive.
+                    flow.start = flow.start.map(|start| (loads + start - amps).max(0.0));
                     flow.current = amps;
                     flow.continuous_share = 1.0;
                     flow.charged = true;
@@ -78,10 +81,11 @@ impl Flows {
             Some(FeedKind::Array(_)) => self.take_array(site, tree),
             Some(FeedKind::Converter(_)) => {
                 let limit = site.banks.get(root).and_then(|f| f.limit).map_or(0.0, |a| a.get::<ampere>());
-                for node in tree.nodes.iter().skip(1).filter(|node| node.parent == 0) {
+                for node in tree.nodes.iter().skip(1) {
                     let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+                    // No more than that flows into any fault behind it.
                     flow.limit = Some(limit);
-                    if limit > flow.current {
+                    if node.parent == 0 && limit > flow.current {
                         flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
                         flow.current = limit;
                     }

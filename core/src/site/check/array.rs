@@ -29,6 +29,13 @@ pub(super) fn arrays(site: &Site, found: &mut Findings) {
             );
             continue;
         };
+        let controller = array.controller.and_then(|c| site.controllers.get(c));
+        if controller.is_some_and(|c| c.kind.is_none()) {
+            at.unmade(
+                ("R10", "array-not-checked"),
+                "whether its controller joins array and bank or tracks: taken for one that tracks; state kind",
+            );
+        }
         match result {
             Ok(strings) => {
                 for check in &strings.checks {
@@ -140,10 +147,15 @@ fn earth_fault(site: &Site, strings: &StringsChecked, at: &mut At<'_>) {
     let Some((cold, _)) = strings.voltages.cold_voc else { return };
     let volts = cold.get::<volt>();
     let Some(from) = site.rules.pv().earth_fault_from else {
-        at.unmade(
-            ("R19", "monitoring-not-checked"),
-            "monitoring of faults to earth: the rule set holds nothing on arrays",
-        );
+        match site.place.monitoring {
+            Some(Monitoring::Insulation | Monitoring::EarthFault) => {
+                at.pass("R19", "faults to earth are watched for; the rule set holds nothing on arrays");
+            }
+            _ => at.unmade(
+                ("R19", "monitoring-not-checked"),
+                "monitoring of faults to earth: the rule set holds nothing on arrays; state monitoring where there is any",
+            ),
+        }
         return;
     };
     if volts <= from.value {

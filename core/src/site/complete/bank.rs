@@ -271,6 +271,8 @@ pub(in crate::site) struct Duty {
     pub current: ElectricCurrent,
     pub depth: Option<Ratio>,
     pub daily_depth: Option<Ratio>,
+    /// Part of the capacity left at the coldest, by the maker.
+    pub left: Option<Ratio>,
     pub margin: Option<Ratio>,
     /// Least capacity that the sources may charge with all they give.
     pub least: Option<ElectricCharge>,
@@ -293,10 +295,18 @@ impl Duty {
             coldest: temperatures(site, part).0,
             current: demand.peak / nominal,
             depth: part.depth,
+            left: part.cold_capacity,
             daily_depth: part.daily_depth,
             margin: site.place.margin,
             least,
         }
+    }
+}
+
+impl Duty {
+    /// Current of the mean hour of its greatest day: that at which a disconnect has to hold for most of the time.
+    fn mean(&self) -> ElectricCurrent {
+        self.daily / Time::new::<day>(1.0)
     }
 }
 
@@ -330,6 +340,7 @@ pub(in crate::site) fn needed(
     let mut steps = alloc::vec![ah("demand of the greatest day", duty.daily, None), days];
     let (mut capacity, time) = if matches!(chemistry, Chemistry::Lfp | Chemistry::Nmc) {
         let mut need = LithiumNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
+        need.stated_fraction = duty.left;
         need.window = duty.depth.unwrap_or(need.window);
         need.margin = duty.margin.unwrap_or(need.margin);
         let found = lithium_capacity(&need)?;
@@ -343,6 +354,7 @@ pub(in crate::site) fn needed(
         (found.capacity, None)
     } else {
         let mut need = LeadAcidNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
+        need.stated_factor = duty.left.map(|left| Ratio::new::<ratio>(1.0) / left);
         need.greatest_depth = duty.depth.unwrap_or(need.greatest_depth);
         need.daily_depth = duty.daily_depth.unwrap_or(need.daily_depth);
         need.margin = duty.margin.unwrap_or(need.margin);
@@ -485,7 +497,7 @@ fn plain(
         capacity,
         cells,
     );
-    finish(site, &mut bank, Some(duty.current))?;
+    finish(site, &mut bank, Some(duty.mean()))?;
     Ok(Choice { bank, steps, price: None, what: format!("plain {}", chemistry.word()) })
 }
 
@@ -552,7 +564,7 @@ fn of_stock(
     );
     let capacity = part.capacity.unwrap_or(battery.capacity);
     let mut bank = entry(part, chemistry, nominal, capacity, found.cells);
-    finish(site, &mut bank, Some(duty.current)).map_err(words)?;
+    finish(site, &mut bank, Some(duty.mean())).map_err(words)?;
     if let Some(limit) = bank.greatest_discharge
         && limit < duty.current
     {
@@ -580,6 +592,9 @@ fn charges_in_the_cold(site: &Site, stated: &BankPart, battery: &StockBattery) -
             digits(coldest),
             digits(from)
         ));
+    }
+    if stated.cold_capacity.is_some() {
+        return Ok(());
     }
     let factor = match battery.chemistry {
         Chemistry::Lfp | Chemistry::Nmc => {
