@@ -12,7 +12,7 @@ SAGS_TO = {"flooded": "flooded lead-acid"}                # row of the Peukert e
 GAS_mA_per_Ah = {"flooded": 20.0, "agm": 8.0}
 # Rest volts of a cell at the charge that a disconnect leaves (flooded 20 %, agm and lfp 10 %); volts that it sags per
 # C-rate at 25 °C, twice as much 60 K below. Printed nowhere, found by varying a file: comparing proves their use.
-LEFT_V = {"flooded": 2.00436, "agm": 1.9934, "lfp": 3.18}
+LEFT_V = {"flooded": 2.0044, "agm": 1.9934, "lfp": 3.18}
 SAG_Vh = {"flooded": 0.72, "agm": 0.45, "lfp": 0.27}
 ROWS = {"flooded": "flooded, deep cycle", "agm": "AGM", "gel": "gel"}
 RATES = {"flooded": "flooded lead-acid", "agm": "AGM lead-acid", "lfp": "lithium iron phosphate"}

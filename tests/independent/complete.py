@@ -42,7 +42,8 @@ class Plant:
         self.capacity = banks.Capacity(self, self.year)
         self.least_disconnect = banks.least_disconnect(self.bank, self.running_amps())
         if not {"cut_off", "disconnect"} & set(site["bank"][0]):
-            self.bank["cut_off"] = self.least_disconnect
+            # Set for the mean current of the greatest day, since few loads alone must not empty it.
+            self.bank["cut_off"] = banks.least_disconnect(self.bank, self.capacity.day / 24)
 
     # What is left open.
 

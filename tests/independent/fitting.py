@@ -137,6 +137,15 @@ def bearings(out, plant, text):
         out.number("head", "charger reaches cold, V", amount(cold[1]), plant.cold_absorption())
 
 
+def shared(out, plant, network, text):
+    """Strings share the greatest current of the bank, into it or out of it."""
+    found = re.search(r"strings share ([\d.]+) A as", text)
+    if found:
+        first = next(c for c in network.circuits if plant.bank["name"] in c.ends)
+        out.number(f"bank {plant.bank['name']}", "current that strings share, A", amount(found[1]),
+                   network.greatest_amps[first.name])
+
+
 def inrush(out, plant, network, text):
     """Bound of the current into an empty input, as R6 bounds what can flow: metal cold, no joints."""
     found = re.search(r"up to ([\d.]+) A flow into", text)

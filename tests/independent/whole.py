@@ -29,6 +29,7 @@ def compare(out, site, text, run, verdict):
     fitting.wiring(out, plant, printed, assumed, run, verdict)
     fitting.boards(out, plant, network, charger, text)
     fitting.bearings(out, plant, text)
+    fitting.shared(out, plant, network, text)
     fitting.inrush(out, plant, network, text)
     fitting.under_load(out, plant, network, charger, of_array, text)
     fitting.buying(out, plant, printed, network, of_array, text)
@@ -146,7 +147,7 @@ def array(out, plant, told, text):
         needed, month = sun.needed(), year.worst_month()
         steps(out, where, told["steps"], {
             "demand of a mean day in the worst month": year.taken(month), "sun-hours of a day there": year.sun[month],
-            "array-to-load ratio": needed["ratio"], "lost to dirt, mismatch and wiring": 0.1,
+            "array-to-load ratio": needed["ratio"], "lost to dirt, mismatch, wiring and shade": 0.1,
             "efficiency of the controller": value(plant.controller["efficiency"]),
             "charge efficiency of the bank": year.stored(),
             "energy that the array must give in a day": needed["energy"],
