@@ -5,7 +5,7 @@ Taken from the report are sizes and devices of circuits.
 
 import bank as banks
 from energy import Sun, Year, watts
-from plant import Circuit, Network
+from plant import Circuit, Network, apparent, starting
 from tables import value
 
 ROUTES = {"controller": 1.5, "array": 10.0}       # m, where none is stated: printed among the assumptions
@@ -42,7 +42,8 @@ class Plant:
         self.capacity = banks.Capacity(self, self.year)
         self.least_disconnect = banks.least_disconnect(self.bank, self.running_amps())
         if not {"cut_off", "disconnect"} & set(site["bank"][0]):
-            self.bank["cut_off"] = self.least_disconnect
+            # Set for the mean current of the greatest day, since few loads alone must not empty it.
+            self.bank["cut_off"] = banks.least_disconnect(self.bank, self.capacity.day / 24)
 
     # What is left open.
 
@@ -124,13 +125,10 @@ class Plant:
         return sum(watts(l, self.nominal) for l in self.ac_loads())
 
     def apparent(self):
-        return sum(watts(l, self.nominal) / l.get("power_factor", 1.0) for l in self.ac_loads())
+        return apparent(self.ac_loads())
 
     def starting(self):
-        """Apparent power of all while the one starts that adds most."""
-        extra = [(value(l["start_power"]) - value(l["power"])) / l.get("power_factor", 1.0)
-                 for l in self.ac_loads() if "start_power" in l]
-        return self.apparent() + max(extra, default=0.0)
+        return starting(self.ac_loads())
 
     def running_amps(self):
         """All loads at once at the nominal voltage."""
@@ -182,9 +180,8 @@ class Plant:
 
     def network(self, printed, assumed):
         """All circuits but the array's: (network, circuit of the array)."""
-        loads = [l for l in self.site["load"] if not l.get("ac")]
         boards = self.site.get("board", [{"name": "main"}])
-        site = {"site": self.site["site"], "bank": [self.bank], "board": boards, "load": loads,
+        site = {"site": self.site["site"], "bank": [self.bank], "board": boards, "load": self.site["load"],
                 "inverter": [self.inverter] if self.inverter else [], "stock": self.stock,
                 "circuit": list(self.routes().values())}
         circuits = [Circuit(site, keys, printed[keys["name"]], assumed) for keys in site["circuit"]]

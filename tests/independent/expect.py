@@ -2,7 +2,7 @@
 
 import re
 
-from plant import opens
+from plant import carries, opens
 from tables import LEAST, area, cell, next_standard, us_ampacity, value, withstand_k
 
 
@@ -50,7 +50,8 @@ class Expectation:
         self.start = None
         if "start" in load or "surge" in load:
             self.start = min(network.solve(r, starting=self.keys["to"], frozen=frozen)[1][self.keys["to"]]
-                             for r in network.banks)
+                             for r in network.banks if self.keys["to"] in low[r][1])
+        self.frozen = frozen
         self.uses = {network.loads[n].get("use", "other") for n in self.served()}
         self.least_supply = load.get("least")
         # A device at an end guards against what that end feeds.
@@ -58,7 +59,7 @@ class Expectation:
         self.greatest = {end: network.greatest(end, circuit) for end in guarded}
         fed = [end for end in guarded if self.fed_from(end)]
         self.least_by_end = {end: network.least(end, circuit) for end in fed}
-        self.least = min(self.least_by_end.values())
+        self.least = min(self.least_by_end.values(), default=None)
 
     def fed_from(self, end):
         return end in self.network.banks or any(
@@ -95,6 +96,12 @@ class Expectation:
             return self.hours / 0.8 + self.amps - self.hours
         return self.amps
 
+    def starting_amps(self):
+        """Greatest current while any one load behind starts, at the volts that it leaves (R3, R16)."""
+        starters = [n for n in self.served() if {"start", "surge", "start_power"} & set(self.network.loads[n])]
+        return max(self.network.solve(r, starting=n, frozen=self.frozen)[0][self.circuit.name]
+                   for r in self.network.banks for n in starters if n in self.network.solve(r)[1])
+
     def column(self):
         """60 °C up to 100 A, 75 °C above or where everything is marked for it; never above the insulation."""
         marks = [self.keys.get("terminal")] + [d.get("terminal") for d in stated_devices(self.keys)]
@@ -125,6 +132,8 @@ class Expectation:
         nothing to recompute."""
         c = self.circuit
         device = other or next(iter(c.devices), None)
+        if device is None and label.startswith(("device", "least")):
+            return None                                # guarded by the device of another circuit
         column = re.search(r"(60|75) °C column", label)
         simple = {
             "mechanical minimum": lambda: (area(c.size), area(LEAST[c.rules])),
@@ -143,6 +152,7 @@ class Expectation:
             "let-through": lambda: (value(self.part(device)["let_through"]),
                                     (withstand_k(c.rules, c.insulation, c.compound) * area(c.size)) ** 2),
             "greatest conductor": lambda: (area(c.size), area(self.part(device)["terminal_range"][1])),
+            "current while it starts against": lambda: (self.starting_amps(), carries(device)),
             "current while it starts": lambda: (
                 value(self.network.loads[self.keys["to"]]["start"]),
                 cell("protection.toml", "iec-60898-3-dc-trip-bands", device["family"][-1], "no_trip")
@@ -173,23 +183,25 @@ def stated_devices(keys):
 class ChargerRun(Expectation):
     """A circuit from a source of charge: its current is all that the source gives, its drop counts up to the bank."""
 
-    def __init__(self, network, circuit):
+    def __init__(self, network, circuit, bank=None, source=None):
         self.network, self.circuit, self.keys, self.is_link = network, circuit, circuit.keys, False
+        self.senses_bank = (source or {"sense": "bank"}).get("sense") == "bank"
         self.amps = self.hours = self.low_amps = network.charged[circuit.name]
         self.degrees, self.ohms = circuit.temperature(self.amps), circuit.ohms(circuit.temperature(self.amps))
-        root = next(iter(network.banks))
+        root = bank or next(iter(network.banks))
         onward = [c.ohms(c.temperature(network.greatest_amps[c.name])) * network.charged[c.name]
                   for c in network.path(root, circuit.ends[1])]
         self.path = (self.amps * self.ohms + sum(onward)) / network.nominal * 100
         self.end = value(network.banks[root]["highest"]) - self.amps * self.ohms
         self.start, self.least_supply, self.uses, self.far = None, None, set(), {}
-        at = {d["at"] for d in circuit.devices}
+        at = {d["at"] for d in circuit.devices} or {circuit.ends[1]}
         self.greatest = {end: network.greatest(end, circuit) for end in at}
         self.least_by_end = {end: network.least(end, circuit) for end in at}
-        self.least = min(self.least_by_end.values())
+        self.least = min(self.least_by_end.values(), default=None)
 
     def drop_limit(self):
-        return {"us": 5, "iec": 5}.get(self.circuit.rules, 10)
+        usual = {"us": 5, "iec": 5}.get(self.circuit.rules, 10)
+        return usual if self.senses_bank else 1        # R11: sense at the bank, or 1 %
 
 
 class ArrayRun(ChargerRun):
@@ -197,6 +209,7 @@ class ArrayRun(ChargerRun):
 
     def __init__(self, network, circuit, sun):
         self.network, self.circuit, self.keys, self.is_link = network, circuit, circuit.keys, False
+        self.senses_bank = True
         self.amps = self.hours = sun.bright_Isc()
         self.low_amps = sun.Imp()
         self.degrees, self.ohms = circuit.temperature(self.amps), circuit.ohms(circuit.temperature(self.amps))

@@ -137,6 +137,15 @@ def bearings(out, plant, text):
         out.number("head", "charger reaches cold, V", amount(cold[1]), plant.cold_absorption())
 
 
+def shared(out, plant, network, text):
+    """Strings share the greatest current of the bank, into it or out of it."""
+    found = re.search(r"strings share ([\d.]+) A as", text)
+    if found:
+        first = next(c for c in network.circuits if plant.bank["name"] in c.ends)
+        out.number(f"bank {plant.bank['name']}", "current that strings share, A", amount(found[1]),
+                   network.greatest_amps[first.name])
+
+
 def inrush(out, plant, network, text):
     """Bound of the current into an empty input, as R6 bounds what can flow: metal cold, no joints."""
     found = re.search(r"up to ([\d.]+) A flow into", text)
@@ -231,6 +240,11 @@ def buying(out, plant, printed, network, of_array, text):
                 out.number("to buy", f"{size} {kind}, price", (price or 0.0, 0.005), ours * stock[size])
         shown = sum(l[0] for l in lines if l[2].startswith("lug ") and f"for {size}" in l[2])
         out.number("to buy", f"lugs for {size}", (shown, 0), lugs[size])
+    for count, size in re.findall(r"(\d+) for ([\d./]+ \S+?)(?:,|$)", next(l[2] for l in lines if "sleeve" in l[2])):
+        out.number("to buy", f"sleeves for {size}", (int(count), 0), lugs.get(size, 0))
+    for volts in re.findall(r"max\. ([\d.]+) V DC?(?! , Isc)", text.split("\nLabels, by the line\n", 1)[1]):
+        if not plant.array or abs(float(volts) - Sun(plant, plant.year).cold_Voc()) > 0.01:
+            out.number("label", "greatest volts", amount(volts), plant.bank["highest"])
     sleeves = sum(l[0] for l in lines if l[2].startswith("heat-shrink"))
     out.number("to buy", "sleeves", (sleeves, 0), sum(lugs.values()))
     found = re.search(r"load-break isolator, at least ([\d.]+) V DC, ([\d.]+) A", text)
@@ -278,6 +292,9 @@ def devices(out, plant, printed, lines):
         price = next((d["price"] for d in shelf if d["family"] == family and rating in map(value, d["ratings"])), None)
         if price is not None:
             out.number("to buy", f"{kind}, price", (sum(l[3] for l in plain), 0.005), count * price)
+            for l in lines:
+                if l[2].startswith(f"{kind},") and "spare" in l[2]:
+                    out.number("to buy", f"{kind}, spare, price", (l[3], 0.005), l[0] * price)
 
 
 def chosen(out, plant, lines):

@@ -30,8 +30,8 @@ class Circuit:
         self.bundled = keys.get("bundled", 2)
         self.metres = sum(value(keys.get(k, keys.get("one_way"))) for k in ("positive_length", "negative_length"))
         self.printed_ohms = float(re.match(NUMBER, printed["loop"])[0]) / 1000
-        lugs = sum(j.get("count", 1) for j in keys.get("joint", [])) or 4
-        self.fixed = lugs * assumed.lug_ohm
+        joints = keys.get("joint", [{"count": 4}])
+        self.fixed = sum(j.get("count", 1) * value(j.get("resistance", assumed.lug_ohm)) for j in joints)
         for part in keys.get("part", []):
             generic = "resistance" not in part
             self.fixed += assumed.part_V[part["kind"]] / value(part["rating"]) if generic else value(part["resistance"])
@@ -74,6 +74,23 @@ class Circuit:
         return COPPER_20 / area(self.size) / 1000 * self.metres * at(self.coldest)
 
 
+def apparent(loads):
+    return sum(l.get("count", 1) * value(l["power"]) / l.get("power_factor", 1.0) for l in loads)
+
+
+def starting(loads):
+    """Apparent power of all AC loads while the one starts that adds most."""
+    extra = [(value(l["start_power"]) - value(l["power"])) / l.get("power_factor", 1.0)
+             for l in loads if "start_power" in l]
+    return apparent(loads) + max(extra, default=0.0)
+
+
+def carries(device):
+    """Lower conventional current of a printed device: it does not open on it."""
+    rows = table("protection.toml", "iec-60269-gg-conventional")["rows"]
+    return next(r for r in reversed(rows) if device["rating"] >= r[0])[2] * device["rating"]
+
+
 def opens(device):
     """Upper conventional current of a printed device."""
     family, rating = device["family"], device["rating"]
@@ -90,7 +107,11 @@ class Network:
     def __init__(self, site, circuits, assumed):
         self.site, self.circuits, self.assumed = site, circuits, assumed
         self.banks = {b["name"]: b for b in site["bank"]}
-        self.loads = {l["name"]: l for l in site.get("load", []) + site.get("inverter", [])}
+        behind = [l for l in site.get("load", []) if l.get("ac")]
+        self.loads = {l["name"]: l for l in site.get("load", []) if not l.get("ac")}
+        for inverter in site.get("inverter", []):
+            asked = {"start_power": min(starting(behind), value(inverter.get("surge", 1e9)))} if behind else {}
+            self.loads[inverter["name"]] = asked | inverter
         self.nominal = value(site["bank"][0]["nominal"])
         # What sources of charge give at most, by circuit: it warms the conductor, and drives no fault.
         self.charged = {}
@@ -125,7 +146,7 @@ class Network:
         if name == starting and "start" in load:
             return amps + value(load["start"])
         if "efficiency" in load:
-            power = load["surge"] if name == starting else load["power"]
+            power = load.get("start_power", load.get("surge")) if name == starting else load["power"]
             return amps + value(power) / value(load["efficiency"]) / volts
         count = load.get("count", 1)
         if "current" in load:

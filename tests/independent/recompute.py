@@ -17,7 +17,7 @@ import tomllib
 
 import report
 import whole as plants
-from expect import Expectation
+from expect import ChargerRun, Expectation
 from plant import Circuit, Network
 from tables import area, value
 
@@ -50,11 +50,52 @@ class Comparison:
 
 
 def compare(out, site, printed, assumed):
-    network = whole(site, printed, assumed)
-    for circuit in network.circuits:
-        run(out, circuit, printed[circuit.name], Expectation(network, circuit))
-        if printed[circuit.name]["designed"]:
-            smaller(out, site, printed, assumed, network, circuit)
+    """Each island of circuits by itself; those from an array are left to the plants."""
+    for part in islands(site):
+        network = whole(part, printed, assumed)
+        outputs = {c.name: output(part, c.ends[0]) for c in network.circuits if output(part, c.ends[0])}
+        network.charged = dict(outputs)
+        for circuit in network.circuits:
+            if circuit.name in outputs:
+                for onward in network.path(home(part, network, circuit), circuit.ends[1]):
+                    network.charged[onward.name] = network.charged.get(onward.name, 0) + outputs[circuit.name]
+        for circuit in network.circuits:
+            if circuit.name in outputs:
+                ours = ChargerRun(network, circuit, home(part, network, circuit), source(part, circuit.ends[0]))
+            else:
+                ours = Expectation(network, circuit)
+            run(out, circuit, printed[circuit.name], ours)
+            if printed[circuit.name]["designed"]:
+                smaller(out, part, printed, assumed, network, circuit)
+
+
+def islands(site):
+    """The site's circuits that hang together, arrays aside, each with its banks."""
+    arrays = {a["name"] for a in site.get("array", [])}
+    left = [c for c in site["circuit"] if c["from"] not in arrays]
+    while left:
+        names, before = {left[0]["from"]}, 0
+        while len(names) != before:
+            before = len(names)
+            names |= {e for c in left if {c["from"], c["to"]} & names for e in (c["from"], c["to"])}
+        mine = [c for c in left if c["from"] in names]
+        left = [c for c in left if c["from"] not in names]
+        yield site | {"circuit": mine, "bank": [b for b in site["bank"] if b["name"] in names],
+                      "board": [b for b in site["board"] if b["name"] in names]}
+
+
+def source(site, name):
+    return next((s for s in site.get("controller", []) + site.get("generator", []) if s["name"] == name), None)
+
+
+def output(site, name):
+    found = source(site, name)
+    return value(found["output"]) if found else 0.0
+
+
+def home(site, network, circuit):
+    """The bank that a source of charge names, else the only one."""
+    return source(site, circuit.ends[0]).get("bank", next(iter(network.banks)))
 
 
 def run(out, circuit, said, ours):
@@ -77,6 +118,7 @@ def run(out, circuit, said, ours):
     volts(out, name, said, ours)
     for check in said["checks"]:
         verdict(out, name, check, ours)
+    governing(out, name, said)
 
 
 def whole(site, printed, assumed):
@@ -95,6 +137,14 @@ def capacity(out, circuit, said):
         if word in shown or factor != 1:
             out.number(circuit.name, f"factor, {word}", report.amount(shown.get(word, "1")), factor)
     out.number(circuit.name, "ampacity, A", report.amount(product.split("= ")[1]), circuit.ampacity)
+
+
+def governing(out, name, said):
+    """The line repeats one of the checks, or the last size not taken."""
+    line = said.get("governing", "")
+    if line and "smallest on offer passes" not in line:
+        repeated = line.replace(" was refused", "")
+        out.fact(name, "governing repeats a line", any(repeated in other for other in said["lines"]), True)
 
 
 def volts(out, name, said, ours):
@@ -196,7 +246,7 @@ def main():
             out.fact("report", "fewer comparisons than there were", max(0, WHOLE[path.stem] - len(out.rows)), 0)
         else:
             printed = report.circuits(text)
-            out.fact("report", "circuits", len(printed), len(site["circuit"]))
+            out.fact("report", "circuits", sorted(printed), sorted(c["name"] for c in site["circuit"]))
             compare(out, site, printed, report.Assumptions(text))
             shopping(out, site, printed, text)
         for row in out.rows:

@@ -81,13 +81,15 @@ def circuits(text):
         head = re.match(r"  (\d+)  (.+?): (.+) – (.+)$", line)
         if head:
             current = {"name": head[2], "ends": (head[3], head[4]), "row": table[len(found)],
-                       "checks": [], "refused": [], "devices": []}
+                       "checks": [], "refused": [], "devices": [], "lines": []}
             found[head[2]] = current
             continue
         body = re.match(r"    (to be bought(?= )|\S+(?: \S+)?\s)\s+(.*)$", line)
         if not body or current is None:
             continue
         mark, rest = body[1].strip(), body[2]
+        if mark != "governing":
+            current["lines"].append(rest)
         if mark in ("passed", "FAILED", "to be bought"):
             current["checks"].append(Check(mark, rest, current["devices"]))
         elif mark == "not taken":

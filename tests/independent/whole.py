@@ -29,6 +29,7 @@ def compare(out, site, text, run, verdict):
     fitting.wiring(out, plant, printed, assumed, run, verdict)
     fitting.boards(out, plant, network, charger, text)
     fitting.bearings(out, plant, text)
+    fitting.shared(out, plant, network, text)
     fitting.inrush(out, plant, network, text)
     fitting.under_load(out, plant, network, charger, of_array, text)
     fitting.buying(out, plant, printed, network, of_array, text)
@@ -146,7 +147,7 @@ def array(out, plant, told, text):
         needed, month = sun.needed(), year.worst_month()
         steps(out, where, told["steps"], {
             "demand of a mean day in the worst month": year.taken(month), "sun-hours of a day there": year.sun[month],
-            "array-to-load ratio": needed["ratio"], "lost to dirt, mismatch and wiring": 0.1,
+            "array-to-load ratio": needed["ratio"], "lost to dirt, mismatch, wiring and shade": 0.1,
             "efficiency of the controller": value(plant.controller["efficiency"]),
             "charge efficiency of the bank": year.stored(),
             "energy that the array must give in a day": needed["energy"],
@@ -208,6 +209,7 @@ def inverter(out, plant, told, text):
 def charging(out, plant, plant_said, told, text):
     where, b = f"bank {plant.bank['name']}", plant.bank
     points = plant.set_points()
+    told_points = told["voltages"][0].split(" at 25 °C")[0]
     words = {"absorption": "absorption", "float": "float", "equalising": "equalize"}
     for word, shown in re.findall(r"(absorption|float|equalising) ([\d.]+) V", told["voltages"][0]):
         out.number(where, f"{word}, V", amount(shown), points.get(words[word]))
@@ -243,5 +245,12 @@ def charging(out, plant, plant_said, told, text):
         out.number("alternator", "for hours, A", amount(found[2]), hours)
         out.number("alternator", "recharge, h", said.digits(re.match(NUMBER, told["recharge"][0])[0]),
                    banks.recharge_h(b, hours, plant.year.stored(), plant.capacity.depth))
+    set_to = re.search(r"R11 .*: to be set to (.*) at 25 °C", text)
+    if set_to:
+        out.fact(where, "set points repeated", set_to[1], told_points)
+    found = re.search(r"R14 bank .*?: to be disconnected at ([\d.]+) V and reconnected at ([\d.]+) V", text)
+    if found:
+        out.number(where, "R14 disconnect, V", amount(found[1]), b["cut_off"])
+        out.number(where, "R14 reconnect, V", amount(found[2]), 2.1 * banks.cells(b))
     into = re.search(r"current into the bank, at most ([\d.]+) A", text)[1]
     out.number(where, "current into the bank, A", said.digits(into), most + sheet.meter_A(most))
