@@ -137,12 +137,17 @@ pub mod guide {
     #[doc = include_str!("../guide/run_sizing.md")]
     pub mod run_sizing {}
     #[cfg(feature = "site")]
+    #[doc = include_str!("../guide/bank_sizing.md")]
+    pub mod bank_sizing {}
+    #[cfg(feature = "site")]
     #[doc = include_str!("../guide/site_file.md")]
     pub mod site_file {}
     #[doc = include_str!("../guide/rule_sets.md")]
     pub mod rule_sets {}
     #[doc = include_str!("../guide/rules.md")]
     pub mod rules {}
+    #[doc = include_str!("../guide/not_covered.md")]
+    pub mod not_covered {}
 }
 
 pub use error::Error;
