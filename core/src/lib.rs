@@ -142,6 +142,9 @@ pub mod guide {
     #[cfg(feature = "site")]
     #[doc = include_str!("../guide/site_file.md")]
     pub mod site_file {}
+    #[cfg(feature = "site")]
+    #[doc = include_str!("../guide/report.md")]
+    pub mod report {}
     #[doc = include_str!("../guide/rule_sets.md")]
     pub mod rule_sets {}
     #[doc = include_str!("../guide/rules.md")]

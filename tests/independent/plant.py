@@ -4,7 +4,7 @@ import functools
 import re
 
 from report import NUMBER
-from tables import COPPER_20, OPENS, area, at, base_ampacity, cell, factors, per_km_20, table, value
+from tables import CELLS, COPPER_20, OPENS, area, at, base_ampacity, cell, factors, per_km_20, table, value
 
 WAYS = {"in conduit": "conduit", "in a loom": "loom", "clipped to a surface": "clipped",
         "cable in conduit": "cable_in_conduit", "in a duct in the ground": "duct"}
@@ -92,6 +92,8 @@ class Network:
         self.banks = {b["name"]: b for b in site["bank"]}
         self.loads = {l["name"]: l for l in site.get("load", []) + site.get("inverter", [])}
         self.nominal = value(site["bank"][0]["nominal"])
+        # What sources of charge give at most, by circuit: it warms the conductor, and drives no fault.
+        self.charged = {}
         # A link with a stated current is a load of that current at either end.
         self.links = [c for c in circuits if "current" in c.keys and self.joins_banks(c)]
 
@@ -120,10 +122,11 @@ class Network:
         load = self.loads.get(name)
         if load is None:
             return amps
-        if name == starting:
+        if name == starting and "start" in load:
             return amps + value(load["start"])
         if "efficiency" in load:
-            return amps + value(load["power"]) / value(load["efficiency"]) / volts
+            power = load["surge"] if name == starting else load["power"]
+            return amps + value(power) / value(load["efficiency"]) / volts
         count = load.get("count", 1)
         if "current" in load:
             return amps + count * value(load["current"])
@@ -157,12 +160,12 @@ class Network:
     @functools.cached_property
     def greatest_amps(self):
         """Greatest current of each circuit over all banks and both levels: what warms its conductor."""
-        amps = {c.name: value(c.keys.get("current", 0)) for c in self.circuits}
+        floor = {c.name: max(value(c.keys.get("current", 0)), self.charged.get(c.name, 0)) for c in self.circuits}
+        amps = floor
         for _ in range(200):
             states = [self.state(root, "cut_off", amps, self.spare(root, amps)) for root in self.banks]
             states += [self.state(root, "highest", amps, {}) for root in self.banks]
-            new = {c.name: max([value(c.keys.get("current", 0)), *(s[0][c.name] for s in states)])
-                   for c in self.circuits}
+            new = {c.name: max([floor[c.name], *(s[0][c.name] for s in states)]) for c in self.circuits}
             if max(abs(new[k] - amps[k]) for k in amps) < 1e-11:
                 break
             amps = new
@@ -198,15 +201,18 @@ class Network:
             circuit, node = steps[node]
             yield circuit
 
-    def cells(self):
-        return self.nominal / 2          # lead-acid
+    def cell_volts(self, bank):
+        """Volts of all cells in series, full and empty; figures for lead-acid as the report prints them."""
+        nominal, full, empty = CELLS.get(bank["chemistry"], (2.0, self.assumed.full_cell_V, self.assumed.empty_cell_V))
+        cells = round(value(bank["nominal"]) / nominal)
+        return cells * full, cells * empty
 
     def greatest(self, node, through):
         """Greater of the two currents that may flow through a device at one end of a circuit, the end shorted.
 
         All banks full and warm, or at their highest voltage, behind their resistance, conductors cold: nodal equations.
         """
-        emf = {n: max(self.cells() * self.assumed.full_cell_V, value(b["highest"])) for n, b in self.banks.items()}
+        emf = {n: max(self.cell_volts(b)[0], value(b["highest"])) for n, b in self.banks.items()}
         names = sorted({e for c in self.circuits for e in c.ends} | set(self.banks))
         free = [n for n in names if n != node]
         index = {name: i for i, name in enumerate(free)}
@@ -239,9 +245,13 @@ class Network:
         for root, bank in self.banks.items():
             if root != near and all(far != near for _, _, far in self.grown(root, [circuit])):
                 continue
-            ohms = value(bank["internal_resistance"]) * self.assumed.aged_ratio
+            full, empty = self.cell_volts(bank)
+            own = value(bank["internal_resistance"])
+            if "short_circuit" in bank:
+                own = max(own, full / value(bank["short_circuit"]))
+            ohms = own * self.assumed.aged_ratio["lithium" if bank["chemistry"] in CELLS else "lead-acid"]
             ohms += sum(c.ohms(c.insulation) for c in [*self.path(root, near), circuit])
-            found.append(self.cells() * self.assumed.empty_cell_V / ohms)
+            found.append(empty / ohms)
         return min(found)
 
 

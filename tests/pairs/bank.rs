@@ -73,8 +73,13 @@ pub fn pairs() -> Vec<Pair> {
                 "R15",
                 "banks-of-unlike-voltage",
                 "banks that are joined have one nominal voltage",
-                Document::two_banks("nominal = '?'; cut_off = '44 V'; highest = '65 V'; internal_resistance = '20 mohm'")
-                    .with("bank", "nominal = '48 V'; cut_off = '44 V'; highest = '65 V'; internal_resistance = '20 mohm'"),
+                Document::two_banks(
+                    "nominal = '?'; cut_off = '44 V'; highest = '65 V'; internal_resistance = '20 mohm'",
+                )
+                .with(
+                    "bank",
+                    "nominal = '48 V'; cut_off = '44 V'; highest = '65 V'; internal_resistance = '20 mohm'",
+                ),
                 "52 V",
                 "54 V",
             )

@@ -1,6 +1,7 @@
-//! Conductors of sources that limit themselves: arrays, converters, chargers, alternators (R4, R7).
+//! Conductors of sources that limit themselves: arrays, converters, chargers, alternators (R4, R7); what a
+//! new load asks of all that feeds it (R21).
 
-use ampwright::site::Severity::Danger;
+use ampwright::site::Severity::{Danger, Nonconforming};
 
 use crate::document::{Document, device};
 use crate::pair::Pair;
@@ -66,6 +67,36 @@ fn charger(kind: &str, output: &str, at_the_bank: &str) -> Document {
 
 pub fn pairs() -> Vec<Pair> {
     vec![
+        // A load that is added: 10 A and its own on a feeder whose 30 A carry 80 % for hours, 24 A.
+        Pair::of(
+            Nonconforming,
+            ("R21", "device-below-load"),
+            "a new load is inspected through its feeder",
+            Document::run_from_board("craft_iso")
+                .add("load", "name = 'new'; current = '?'; least = '1 V'; greatest = '100 V'")
+                .add(
+                    "circuit",
+                    "name = 'new'; from = 'board'; to = 'new'; one_way = '1 m'; size = '2.5 mm2'; \
+                     insulation = 'PVC 105 degC'",
+                )
+                .add("circuit.device", &device("class T", "20 A")),
+            ("13.8 A", "14.2 A"),
+        ),
+        Pair::of(
+            Nonconforming,
+            ("R21", "discharge-above-limit"),
+            "a new load is inspected through its bank",
+            Document::run("craft_iso")
+                .with("bank", "greatest_discharge = '15 A'")
+                .add("load", "name = 'new'; current = '?'; least = '1 V'; greatest = '100 V'")
+                .add(
+                    "circuit",
+                    "name = 'new'; from = 'bank'; to = 'new'; one_way = '1 m'; size = '2.5 mm2'; \
+                     insulation = 'PVC 105 degC'",
+                )
+                .add("circuit.device", &device("class T", "20 A")),
+            ("4.9 A", "5.1 A"),
+        ),
         // 15 A of 14 AWG in the 60 °C column, over 1.25 × 1.25: 9.6 A.
         Pair::of(
             Danger,

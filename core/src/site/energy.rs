@@ -182,7 +182,7 @@ pub(super) fn is_timed(entry: &LoadEntry) -> bool {
 }
 
 /// AC loads of an inverter: those that name it, and with the first inverter those that name none.
-pub(super) fn ac_loads<'a>(site: &'a Site, inverter: usize) -> impl Iterator<Item = &'a LoadEntry> {
+pub(super) fn ac_loads(site: &Site, inverter: usize) -> impl Iterator<Item = &LoadEntry> {
     let name = site.inverters.get(inverter).map(|i| i.name.as_str());
     site.loads.iter().filter(move |load| {
         load.ac && load.inverter.as_deref().map_or(inverter == 0, |wanted| Some(wanted) == name)

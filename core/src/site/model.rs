@@ -86,6 +86,7 @@ pub enum LoadKind {
 
 /// `[[load]]`.
 #[derive(Clone, Debug)]
+#[allow(clippy::struct_excessive_bools)] // they are the flags of the file, each with its key
 pub struct LoadEntry {
     /// `name`.
     pub name: String,

@@ -96,6 +96,7 @@ pub enum Room {
 
 /// `[[bank]]` as stated.
 #[derive(Clone, Debug)]
+#[allow(clippy::struct_excessive_bools)] // they are the flags of the file, each with its key
 pub struct BankPart {
     /// `name`.
     pub name: String,

@@ -172,7 +172,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
             }
             Item::Inverter(i) => {
                 let inverter = self.site.inverters.get(i)?;
-                load.power = inverter.surge? / inverter.efficiency;
+                load.power = inverter.start? / inverter.efficiency;
             }
             _ => return None,
         }
@@ -233,7 +233,7 @@ fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
         }
         Item::Inverter(i) => {
             let inverter = site.inverters.get(i)?;
-            let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
+            let surge = inverter.start?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
             Some((surge - amps).max(0.0))
         }
         _ => None,

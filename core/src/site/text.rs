@@ -22,7 +22,7 @@ use crate::protection::{Guard, Pole};
 use crate::rules::{Check, Installation, Key, Space};
 
 /// Stands under every report (DESIGN 11).
-const CAUTIONS: [&str; 5] = [
+pub(super) const CAUTIONS: [&str; 5] = [
     "A bank stores enough energy to melt tools: remove jewellery, insulate tools, cover terminals.",
     "A DC arc does not go out by itself: never open a joint, fuse or connector under load.",
     "Lead-acid and nickel banks give off hydrogen while they charge: ventilate, no sparks.",

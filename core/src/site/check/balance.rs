@@ -7,6 +7,7 @@ use alloc::vec::Vec;
 use uom::si::energy::watt_hour;
 
 use super::At;
+use crate::quantity::Energy;
 use crate::site::energy::Demand;
 use crate::site::finding::{Findings, digits};
 use crate::site::plant_text::MONTHS;
@@ -41,7 +42,7 @@ pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
         let mut short: Vec<String> = Vec::new();
         let mut worst = f64::INFINITY;
         for (month, day) in demand.mean.iter().enumerate() {
-            let sun = arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, |e| e.get::<watt_hour>());
+            let sun = arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, Energy::get::<watt_hour>);
             let (brought, taken) = (sun + others, day.total.get::<watt_hour>());
             if taken <= 0.0 {
                 continue;

@@ -19,7 +19,7 @@ use uom::si::volume_rate::cubic_meter_per_hour;
 use super::At;
 use crate::battery::{
     self, ChargeStage, Chemistry, ColdSpell, DISCONNECT, FREEZING_MARGIN_K, GASSING, Link, StringShare,
-    StringSource, charge_limit, cold_fraction, cold_spell, data, disconnect, freezing_floor,
+    StringSource, capacity_left, charge_limit, cold_spell, data, disconnect, freezing_floor,
     hour_rate_capacity, is_within, share, ventilation_flow, ventilation_opening,
 };
 use crate::quantity::{
@@ -186,7 +186,7 @@ fn cold(
             ),
         ),
         Err(error) => {
-            at.danger(("R13", "electrolyte-may-freeze"), format!("{error}"), "keep the bank warmer")
+            at.danger(("R13", "electrolyte-may-freeze"), format!("{error}"), "keep the bank warmer");
         }
     }
     let from = part.charge_from.map(|t| t.get::<degree_celsius>());
@@ -200,14 +200,14 @@ fn cold(
         return;
     }
     let daily = demand.map(|d| d.greatest_day().charge(bank.nominal)).filter(|q| q.value > 0.0);
-    let left = cold_fraction(chemistry, coldest).map_or(0.5, |f| f.value.get::<ratio>());
+    let left = capacity_left(chemistry, coldest).ok();
     let lasts = daily.and_then(|daily_demand| {
         cold_spell(&ColdSpell {
             chemistry,
             capacity: bank.capacity,
             start: StateOfCharge::new(1.0).ok()?,
             temperature: coldest,
-            cold_fraction: Ratio::new::<ratio>(left),
+            cold_fraction: left?.value,
             daily_demand,
             margin,
         })
@@ -396,10 +396,10 @@ fn ventilation(bank: &BankEntry, chemistry: Chemistry, part: &BankPart, at: &mut
         part.opening.map(|a| a.get::<square_centimeter>()),
     ) {
         (Some(air), _) if air >= hours * (1.0 - 1e-9) => {
-            at.pass("R20", &format!("{} m³/h of air, at least {} m³/h", digits(air), digits(hours)))
+            at.pass("R20", &format!("{} m³/h of air, at least {} m³/h", digits(air), digits(hours)));
         }
         (_, Some(own)) if own >= opening * (1.0 - 1e-9) => {
-            at.pass("R20", &format!("two openings of {} cm², at least {} cm²", digits(own), digits(opening)))
+            at.pass("R20", &format!("two openings of {} cm², at least {} cm²", digits(own), digits(opening)));
         }
         (None, None) if part.designed => at.pass("R20", &format!("to be ventilated by {words}")),
         (None, None) => at.unmade(

@@ -273,25 +273,24 @@ fn take_choice(
         name
     };
     let array = stated.map_or_else(|| free("array"), |a| a.name.clone());
-    let index = match site.controllers.iter().position(|c| c.name == choice.controller.name) {
-        Some(index) => index,
-        None => {
-            let name = free("charge controller");
-            let part = ControllerPart {
-                model: Some(choice.controller.name.clone()),
-                name,
-                line: 0,
-                bank: Some(entry.name.clone()),
-                charging: Charging {
-                    // A designed controller is bought with leads that sense at the bank (R11).
-                    sense: choice.controller.charging.sense.or(Some(Sense::Bank)),
-                    ..choice.controller.charging
-                },
-                ..choice.controller
-            };
-            site.controllers.push(part);
-            site.controllers.len() - 1
-        }
+    let known = site.controllers.iter().position(|c| c.name == choice.controller.name);
+    let index = if let Some(index) = known {
+        index
+    } else {
+        let part = ControllerPart {
+            model: Some(choice.controller.name.clone()),
+            name: free("charge controller"),
+            line: 0,
+            bank: Some(entry.name.clone()),
+            charging: Charging {
+                // A designed controller is bought with leads that sense at the bank (R11).
+                sense: choice.controller.charging.sense.or(Some(Sense::Bank)),
+                ..choice.controller.charging
+            },
+            ..choice.controller
+        };
+        site.controllers.push(part);
+        site.controllers.len() - 1
     };
     reasons.arrays.push(ArrayReason {
         name: array.clone(),
@@ -518,7 +517,7 @@ fn tracked(
 fn worst_month(wanted: &Wanted<'_>) -> usize {
     let burden = |month: usize| {
         let demand = wanted.months.get(month).map_or(0.0, |d| d.total.get::<watt_hour>());
-        demand / wanted.sun.get(month).map_or(1.0, |s| s.get::<hour>()).max(1e-9)
+        demand / wanted.sun.get(month).map_or(1.0, Time::get::<hour>).max(1e-9)
     };
     (0..12).fold(0, |worst, month| if burden(month) > burden(worst) { month } else { worst })
 }

@@ -52,13 +52,11 @@ pub(in crate::site) fn temperatures(
 /// Days without charge: the document's, else what is recommended for the class of load.
 pub(in crate::site) fn autonomy(site: &Site) -> (Time, Citation) {
     let class = if site.place.critical { LoadClass::Critical } else { LoadClass::NonCritical };
-    match site.place.autonomy {
-        Some(stated) => (stated, Citation::new("the site file", "autonomy", Seen::Stated)),
-        None => {
-            let held = autonomy_days(class);
-            (Time::new::<day>(held.value.0), held.citation)
-        }
+    if let Some(stated) = site.place.autonomy {
+        return (stated, Citation::new("the site file", "autonomy", Seen::Stated));
     }
+    let held = autonomy_days(class);
+    (Time::new::<day>(held.value.0), held.citation)
 }
 
 /// Whether its size is to be designed.

@@ -57,6 +57,7 @@ fn entry(part: InverterPart, power: Power, efficiency: Ratio, designed: bool) ->
         line: part.line,
         power,
         surge: part.surge,
+        start: part.surge,
         efficiency,
         idle: part.idle,
         least: part.least,
@@ -65,6 +66,22 @@ fn entry(part: InverterPart, power: Power, efficiency: Ratio, designed: bool) ->
         terminal: part.terminal,
         part,
         designed,
+    }
+}
+
+/// What each inverter gives for seconds: no more than its loads ask for, where they are known.
+pub(super) fn limit_starts(site: &mut Site) {
+    for index in 0..site.inverters.len() {
+        let nominal = site.banks.first().map(|b| b.nominal).unwrap_or_default();
+        let asked = demand(site, nominal, ac_loads(site, index)).ok().map(|d| d.starting);
+        let Some(inverter) = site.inverters.get_mut(index) else { continue };
+        inverter.start = match (inverter.surge, asked) {
+            (Some(surge), Some(asked)) if asked.value > 0.0 && asked < surge => {
+                // It gives its continuous power at any rate.
+                Some(if asked > inverter.power { asked } else { inverter.power })
+            }
+            (surge, _) => surge,
+        };
     }
 }
 

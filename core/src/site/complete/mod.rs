@@ -151,6 +151,7 @@ fn round(document: &Document, hint: &Hint) -> Result<(Site, Reasons), Problems> 
     if !problems.is_empty() {
         return refused(problems);
     }
+    inverter::limit_starts(&mut site);
     // Which loads hang on which bank: the sizes do not matter for that.
     let mut plan = site.clone();
     add_chargers(&mut plan);
