@@ -83,7 +83,8 @@ fn the_comparison_follows_the_change_through_all_that_feeds_it() {
         (r#"bank "house""#, "discharge-above-limit"),
         (r#"bank "house""#, "energy-short"),
         (r#"bank "house""#, "bank-too-small"),
-        // A surge of 5 kW: 234 A and more through 160 A fuses, of which no time-current curve is held.
+        // A start of 1875 + 2750 VA: 4625/0.9/23.7 = 217 A and more; of gG of 160 A is held that it carries 1.25 × 160 A for
+        // hours, and no time-current curve.
         (r#"circuit "bank main""#, "start-against-device-not-checked"),
         (r#"circuit "workshop feed""#, "start-against-device-not-checked"),
         // Below the volts that the new current takes away.

@@ -236,6 +236,31 @@ fn figures_are_those_of_the_report() {
     }
 }
 
+/// As the report in words marks them: `to be bought`, and `advice` in place of `FAILED`.
+#[test]
+fn what_is_bought_or_only_recommended_is_marked() {
+    let marked = |report: &Report, key: &str, outcome: &str| {
+        let json = parsed(&report.to_json());
+        let circuits = json["circuits"].as_array().unwrap();
+        let checks = circuits.iter().flat_map(|c| c["judgement"]["checks"].as_array().unwrap());
+        checks.filter(|c| c[key] == true && c["outcome"] == outcome).count()
+    };
+    let rows = |report: &Report, mark: &str| {
+        let text = report.to_string();
+        text.lines().filter(|line| line.strip_prefix("    ").is_some_and(|l| l.starts_with(mark))).count()
+    };
+    let (mut bought, mut advice) = (0, 0);
+    let long = Document::run("us").with("circuit", "one_way = '30 m'").to_string();
+    for text in demo_sites().iter().map(|(_, text)| text).chain([&long]) {
+        let report = report(text);
+        assert_eq!(marked(&report, "to_be_bought", "passed"), rows(&report, "to be bought "));
+        assert_eq!(marked(&report, "recommended", "failed"), rows(&report, "advice "));
+        bought += rows(&report, "to be bought ");
+        advice += rows(&report, "advice ");
+    }
+    assert!(bought > 0 && advice > 0, "{bought} {advice}");
+}
+
 #[test]
 fn the_same_site_gives_the_same_text_without_any_path() {
     for text in [HERON_POINT, BADLY_BUILT] {

@@ -13,7 +13,7 @@ use super::reach::Reach;
 use super::read::{Problem, Problems};
 use super::system::Site;
 use crate::circuit::{Checked, Outcome, capacity};
-use crate::rules::Check;
+use crate::rules::{Check, LoadUse};
 
 /// Enlarges what fails; `true` where something grew.
 pub(super) fn enlarge(
@@ -129,6 +129,10 @@ fn cannot_serve(site: &Site, circuit: usize, planned: &Planned, check: &Checked)
     let text = match capacity(&planned.run, &planned.positive, None) {
         // Beyond the tables size does not help.
         Err(error) if check.outcome == Outcome::NotChecked => error.to_string(),
+        _ if check.check == Check::Drop && planned.run.usage == LoadUse::Charging => format!(
+            "no conductor on offer passes every check; the largest fails: {check}; let the source sense at the bank \
+             (sense = \"bank\"), add larger [[stock.cable]] or shorten the run"
+        ),
         _ => format!(
             "no conductor on offer passes every check; the largest fails: {check}; add larger [[stock.cable]], \
              shorten the run, split the load or raise the voltage"

@@ -368,6 +368,8 @@ pub struct ControllerPart {
     pub idle: Option<Power>,
     /// Its set points.
     pub charging: Charging,
+    /// `load_dump = true`: it bears that the bank is disconnected under charge.
+    pub load_dump: Option<bool>,
     /// `bank`: name of the bank it charges.
     pub bank: Option<String>,
     /// `board`: to which its output leads, where the circuit is designed.

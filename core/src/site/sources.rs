@@ -78,10 +78,11 @@ impl Flows {
             Some(FeedKind::Array(_)) => self.take_array(site, tree),
             Some(FeedKind::Converter(_)) => {
                 let limit = site.banks.get(root).and_then(|f| f.limit).map_or(0.0, |a| a.get::<ampere>());
-                for node in tree.nodes.iter().skip(1).filter(|node| node.parent == 0) {
+                for node in tree.nodes.iter().skip(1) {
                     let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+                    // No more than that flows into any fault behind it.
                     flow.limit = Some(limit);
-                    if limit > flow.current {
+                    if node.parent == 0 && limit > flow.current {
                         flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
                         flow.current = limit;
                     }

@@ -140,10 +140,15 @@ fn earth_fault(site: &Site, strings: &StringsChecked, at: &mut At<'_>) {
     let Some((cold, _)) = strings.voltages.cold_voc else { return };
     let volts = cold.get::<volt>();
     let Some(from) = site.rules.pv().earth_fault_from else {
-        at.unmade(
-            ("R19", "monitoring-not-checked"),
-            "monitoring of faults to earth: the rule set holds nothing on arrays",
-        );
+        match site.place.monitoring {
+            Some(Monitoring::Insulation | Monitoring::EarthFault) => {
+                at.pass("R19", "faults to earth are watched for; the rule set holds nothing on arrays");
+            }
+            _ => at.unmade(
+                ("R19", "monitoring-not-checked"),
+                "monitoring of faults to earth: the rule set holds nothing on arrays; state monitoring where there is any",
+            ),
+        }
         return;
     };
     if volts <= from.value {

@@ -68,7 +68,12 @@ pub(in crate::site) fn drawn(site: &Site, plan: &Plan, name: &str) -> ElectricCu
         .iter()
         .zip(&plan.circuits)
         .filter(|(c, _)| c.from == name || c.to == name)
-        .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current))
+        .filter_map(|(_, p)| p.as_ref())
+        .map(|p| {
+            // What its sources drive into it is charge, not discharge.
+            let amps = ElectricCurrent::new::<ampere>(p.flow.low_current.unwrap_or(0.0));
+            if p.flow.charged { amps } else { p.judgement.current }
+        })
         .sum()
 }
 

@@ -13,6 +13,7 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::At;
 use crate::battery::{Chemistry, Standing, VoltageRange, cell_set_points, charge_limit, set_points};
 use crate::generator::{ChargeSource, Contribution, LoadDump, SourceKind, source_sum};
+use crate::protection::End;
 use crate::quantity::{ElectricCurrent, ElectricPotential, ThermodynamicTemperature};
 use crate::site::complete::bank::temperatures;
 use crate::site::finding::{Findings, Severity, digits};
@@ -38,6 +39,10 @@ const fn greatest_cell_V(chemistry: Chemistry) -> Option<f64> {
     }
 }
 
+const fn dumps(bears: bool) -> LoadDump {
+    if bears { LoadDump::Bears } else { LoadDump::DoesNotBear }
+}
+
 /// A charger as a source.
 pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<ChargeSource> {
     let limit = charger.limit?;
@@ -54,7 +59,12 @@ pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<Charg
             let best = ElectricCurrent::new::<ampere>(rated / volts);
             // Without an array, or with one that gives more, the controller's own output counts.
             let nameplate = if rated > 0.0 && best < limit { best } else { limit };
-            ChargeSource { controller_limit: Some(limit), ..ChargeSource::new(SourceKind::Array, nameplate) }
+            let load_dump = site.controllers.get(index).and_then(|c| c.load_dump).map(dumps);
+            ChargeSource {
+                controller_limit: Some(limit),
+                load_dump,
+                ..ChargeSource::new(SourceKind::Array, nameplate)
+            }
         }
         ChargerKind::Generator(index) => {
             let part = site.generators.get(index)?;
@@ -65,8 +75,7 @@ pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<Charg
                 GeneratorKind::Wind => SourceKind::Wind,
                 GeneratorKind::Hydro => SourceKind::Hydro,
             };
-            let load_dump =
-                part.load_dump.map(|bears| if bears { LoadDump::Bears } else { LoadDump::DoesNotBear });
+            let load_dump = part.load_dump.map(dumps);
             ChargeSource { lasting: part.hot_output, load_dump, ..ChargeSource::new(kind, limit) }
         }
     })
@@ -97,6 +106,7 @@ pub(super) fn banks(site: &Site, found: &mut Findings) {
         for charger in chargers {
             let mut at = At::new(found, format!("\"{}\" into \"{}\"", charger.name, bank.name), charger.line);
             one(site, bank, chemistry, part, charger, &mut at);
+            own_end(site, charger, &mut at);
         }
     }
 }
@@ -115,6 +125,30 @@ fn charged_through(site: &Site, bank: usize) -> Option<&str> {
         };
         (other != bank && charges).then_some(entry.name.as_str())
     })
+}
+
+/// A machine that does not limit itself wants a device at its own end too (R7).
+fn own_end(site: &Site, charger: &Charger, at: &mut At<'_>) {
+    let ChargerKind::Generator(index) = charger.kind else { return };
+    let Some(part) = site.generators.get(index) else { return };
+    if !matches!(part.kind, GeneratorKind::Alternator | GeneratorKind::Wind | GeneratorKind::Hydro) {
+        return;
+    }
+    let guarded = site
+        .circuits
+        .iter()
+        .filter(|c| c.from == charger.name)
+        .any(|c| c.devices.iter().any(|d| d.end == End::From));
+    if part.self_limiting {
+        at.pass("R7", "limits itself: its circuit is guarded at the bank's end");
+    } else if guarded {
+        at.pass("R7", "its circuit is guarded at its own end too");
+    } else {
+        at.unmade(
+            ("R7", "source-limit-not-stated"),
+            "whether it limits itself; state self_limiting = true, or a device at its own end",
+        );
+    }
 }
 
 /// All sources together against what the bank takes.
@@ -302,7 +336,9 @@ fn dump(
             ChargerKind::Generator(i) => {
                 (site.generators.get(i).and_then(|g| g.load_dump), "; state load_dump")
             }
-            ChargerKind::Controller(_) => (None, "; ask its maker"),
+            ChargerKind::Controller(i) => {
+                (site.controllers.get(i).and_then(|c| c.load_dump), "; state load_dump")
+            }
         };
         let name = &charger.name;
         if !part.opens_under_charge {

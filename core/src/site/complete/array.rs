@@ -153,7 +153,11 @@ pub(super) fn design(
         months: &demand.mean,
         sun,
         class: if site.place.critical { LoadClass::Critical } else { LoadClass::NonCritical },
-        losses: Ratio::new::<ratio>(ARRAY_LOSS),
+        losses: {
+            let shaded = stated.and_then(|a| a.shade).map_or(0.0, |s| s.get::<ratio>());
+            // More than nine tenths lost are refused by the sizing.
+            Ratio::new::<ratio>((1.0 - (1.0 - ARRAY_LOSS) * (1.0 - shaded)).min(0.9))
+        },
         charge_efficiency,
         shade: match stated.and_then(|a| a.shade) {
             Some(part) if part.value > 0.0 => Exposure::PartlyShaded,
@@ -451,7 +455,7 @@ fn clamped(
         ),
         step("sun-hours of a day there", found.sun_hours.get::<hour>(), "h", None),
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
-        step("lost to dirt, mismatch and wiring", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
+        step("lost to dirt, mismatch, wiring and shade", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
         step("charge efficiency of the bank", wanted.charge_efficiency.get::<ratio>(), "", None),
         step(
             "charge that the array must give in a day",
@@ -500,7 +504,7 @@ fn tracked(
         step("demand of a mean day in the worst month", found.demand.get::<watt_hour>(), "Wh", None),
         step("sun-hours of a day there", found.sun_hours.get::<hour>(), "h", None),
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
-        step("lost to dirt, mismatch and wiring", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
+        step("lost to dirt, mismatch, wiring and shade", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
         step("efficiency of the controller", efficiency.get::<ratio>(), "", None),
         step("charge efficiency of the bank", wanted.charge_efficiency.get::<ratio>(), "", None),
         step("energy that the array must give in a day", found.array_energy.get::<watt_hour>(), "Wh", None),
@@ -585,6 +589,7 @@ fn plain_controllers() -> Vec<ControllerPart> {
                 efficiency: Some(Ratio::new::<ratio>(0.95)),
                 idle: Some(Power::new::<watt>(1.0)),
                 charging: Charging::default(),
+                load_dump: None,
                 bank: None,
                 board: None,
                 route: None,

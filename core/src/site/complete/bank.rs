@@ -300,6 +300,13 @@ impl Duty {
     }
 }
 
+impl Duty {
+    /// Current of the mean hour of its greatest day: that at which a disconnect has to hold for most of the time.
+    fn mean(&self) -> ElectricCurrent {
+        self.daily / Time::new::<day>(1.0)
+    }
+}
+
 /// Capacity that a chemistry needs for a duty, with every step, and the time over which it is drawn.
 pub(in crate::site) fn needed(
     chemistry: Chemistry,
@@ -485,7 +492,7 @@ fn plain(
         capacity,
         cells,
     );
-    finish(site, &mut bank, Some(duty.current))?;
+    finish(site, &mut bank, Some(duty.mean()))?;
     Ok(Choice { bank, steps, price: None, what: format!("plain {}", chemistry.word()) })
 }
 
@@ -552,7 +559,7 @@ fn of_stock(
     );
     let capacity = part.capacity.unwrap_or(battery.capacity);
     let mut bank = entry(part, chemistry, nominal, capacity, found.cells);
-    finish(site, &mut bank, Some(duty.current)).map_err(words)?;
+    finish(site, &mut bank, Some(duty.mean())).map_err(words)?;
     if let Some(limit) = bank.greatest_discharge
         && limit < duty.current
     {

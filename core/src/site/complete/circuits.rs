@@ -96,7 +96,12 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
             ChargerKind::Generator(i) => site.generators.get(i).map(|g| (g.board.clone(), g.route, 0.0)),
         }
         .unwrap_or((None, None, 0.0));
-        let to = stated.unwrap_or_else(|| board.clone());
+        // Without any board the bank itself takes it, where its own circuits are written.
+        let bank = charger
+            .bank
+            .and_then(|b| site.banks.get(b))
+            .filter(|b| site.boards.is_empty() && joined(&b.name));
+        let to = stated.or_else(|| bank.map(|b| b.name.clone())).unwrap_or_else(|| board.clone());
         wish(format!("{} output", charger.name), &charger.name, &to, route, usual);
     }
     for feed in site.banks.iter().filter(|b| !from_taken.contains(&b.name)) {

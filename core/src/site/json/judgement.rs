@@ -8,6 +8,8 @@ use super::shape::object;
 use super::words::{CheckKind, Outcome, Relation};
 use crate::circuit;
 use crate::rules;
+use crate::site::report::{CircuitLine, DeviceLine};
+use crate::site::text::{is_bought, is_recommended};
 
 object! {
     /// What was found about one run with one device.
@@ -96,6 +98,10 @@ object! {
         limit: Number,
         /// Unit of both; empty without numbers.
         unit: &'static str,
+        /// The value is what a device to be bought must have: nothing is known of a part yet.
+        to_be_bought: bool,
+        /// The limit is a recommendation: not to keep it is advice, no nonconformity.
+        recommended: bool,
         /// How value and limit relate.
         relation: Relation,
         /// Part of the limit that is used, above 1 where it failed; null without numbers and where not checked.
@@ -109,8 +115,13 @@ object! {
     }
 }
 
-impl From<&circuit::Judgement> for Judgement {
-    fn from(judgement: &circuit::Judgement) -> Self {
+impl Judgement {
+    /// Of a circuit with one of its devices.
+    pub(super) fn of(
+        judgement: &circuit::Judgement,
+        line: &CircuitLine,
+        device: Option<&DeviceLine>,
+    ) -> Self {
         let circuit::Judgement {
             current,
             continuous,
@@ -139,7 +150,7 @@ impl From<&circuit::Judgement> for Judgement {
             loss_W: watts(*loss),
             least_fault_A: least_fault.and_then(amps),
             device_limit: device_limit.as_ref().map(Into::into),
-            checks: list(checks),
+            checks: checks.iter().map(|checked| Check::of(checked, line, device)).collect(),
         }
     }
 }
@@ -173,8 +184,8 @@ impl From<&rules::DeviceLimit> for DeviceLimit {
     }
 }
 
-impl From<&circuit::Checked> for Check {
-    fn from(checked: &circuit::Checked) -> Self {
+impl Check {
+    fn of(checked: &circuit::Checked, line: &CircuitLine, device: Option<&DeviceLine>) -> Self {
         let circuit::Checked { check, outcome, actual, limit, unit, relation, what, citation } = checked;
         let compared = *relation != circuit::Relation::Plain && *outcome != circuit::Outcome::NotChecked;
         let number = |value: f64| if compared { exact(value) } else { None };
@@ -184,6 +195,8 @@ impl From<&circuit::Checked> for Check {
             value: number(*actual),
             limit: number(*limit),
             unit,
+            to_be_bought: device.is_some_and(|d| is_bought(d, *check)),
+            recommended: is_recommended(line, *check),
             relation: relation.into(),
             used_ratio: checked.used().and_then(tidy),
             what,

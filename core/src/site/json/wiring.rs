@@ -178,8 +178,12 @@ impl<'a> From<&'a CircuitLine> for Circuit<'a> {
             negative: negative.into(),
             designed: *designed,
             run: run.into(),
-            judgement: judgement.into(),
-            further: list(further),
+            judgement: Judgement::of(judgement, line, devices.first()),
+            further: further
+                .iter()
+                .enumerate()
+                .map(|(place, judgement)| Judgement::of(judgement, line, devices.get(place + 1)))
+                .collect(),
             devices: list(devices),
             refused: refused.iter().map(|(size, why)| Refused { size: size.into(), why }).collect(),
             governing,

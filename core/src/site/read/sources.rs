@@ -81,6 +81,7 @@ pub(super) fn controller(entry: &mut Entry<'_, '_>, stock: &[ControllerPart]) ->
         efficiency: entry.quantity(&EFFICIENCY),
         idle: entry.quantity(&IDLE),
         charging: charging(entry),
+        load_dump: said(entry, &LOAD_DUMP),
         bank: named(entry, &BANK_NAME),
         board: named(entry, &BOARD_NAME),
         route: entry.quantity(&ROUTE),
