@@ -250,10 +250,13 @@ fn copper(conductor: &Conductor, celsius: f64) -> (f64, Citation) {
     let printed = table
         .cell(conductor.size, conductor.coating)
         .map(|(cell, citation)| (cell * table.unit_ohm_per_m * temperature_factor(table, celsius), citation));
-    let derived = (from_area(conductor, celsius) * allowance(conductor), FROM_AREA);
     let own_row = metric || matches!(conductor.class, Class::Solid | Class::Stranded);
+    if let (Some(printed), true) = (printed, own_row) {
+        return printed;
+    }
+    let derived = (from_area(conductor, celsius) * allowance(conductor), FROM_AREA);
     match printed {
-        Some(printed) if own_row || printed.0 >= derived.0 => printed,
+        Some(printed) if printed.0 >= derived.0 => printed,
         _ => derived,
     }
 }
@@ -279,17 +282,45 @@ fn temperature_factor(table: &ResistanceTable, celsius: f64) -> f64 {
 /// Worst ratio of printed maximum to resistivity over area in the class's table, which covers strands longer than
 /// the cable and wire at its least diameter.
 fn allowance(conductor: &Conductor) -> f64 {
-    class_table(conductor.class)
-        .rows
-        .iter()
-        .filter_map(|row| {
-            let printed = match conductor.coating {
-                Coating::Plain => row.plain,
-                Coating::Tinned => row.coated,
-            }?;
-            Some(printed * 1e-3 * row.size.area_mm2() / COPPER_OHM_MM2_PER_M)
-        })
-        .fold(1.0, f64::max)
+    // Each found once, when this is compiled.
+    const ALLOWANCES: [[f64; 2]; 4] = [
+        [worst(&CLASS_1, Coating::Plain), worst(&CLASS_1, Coating::Tinned)],
+        [worst(&CLASS_2, Coating::Plain), worst(&CLASS_2, Coating::Tinned)],
+        [worst(&CLASS_5, Coating::Plain), worst(&CLASS_5, Coating::Tinned)],
+        [worst(&CLASS_6, Coating::Plain), worst(&CLASS_6, Coating::Tinned)],
+    ];
+    let [plain, tinned] = match conductor.class {
+        Class::Solid => ALLOWANCES[0],
+        Class::Stranded => ALLOWANCES[1],
+        Class::Flexible => ALLOWANCES[2],
+        Class::ExtraFlexible => ALLOWANCES[3],
+    };
+    match conductor.coating {
+        Coating::Plain => plain,
+        Coating::Tinned => tinned,
+    }
+}
+
+/// The worst ratio of a metric table, at least 1.
+#[allow(clippy::indexing_slicing)] // const: no iterator there, and the compiler sees every index
+const fn worst(table: &ResistanceTable, coating: Coating) -> f64 {
+    let mut worst = 1.0;
+    let mut place = 0;
+    while place < table.rows.len() {
+        let row = &table.rows[place];
+        let printed = match coating {
+            Coating::Plain => row.plain,
+            Coating::Tinned => row.coated,
+        };
+        if let (Some(printed), Designation::SquareMillimeter(area)) = (printed, row.size.designation()) {
+            let ratio = printed * 1e-3 * area / COPPER_OHM_MM2_PER_M;
+            if ratio > worst {
+                worst = ratio;
+            }
+        }
+        place += 1;
+    }
+    worst
 }
 
 /// Resistivity over the nominal area, Ω/m.

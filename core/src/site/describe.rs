@@ -70,8 +70,8 @@ pub(super) fn plant(site: &Site, demands: &[Demand], reasons: &Reasons) -> Plant
                     bank: name(first),
                     mean: d.mean,
                     full: d.full,
-                    arrays: arrays_of(site, first),
-                    generators: generators_of(site, first),
+                    arrays: arrays_of(site, &d.banks),
+                    generators: generators_of(site, &d.banks),
                 })
             })
             .collect(),

@@ -1,15 +1,14 @@
 //! Prospective currents of the site, greatest and least, at both ends of each circuit (R6).
 
-use alloc::collections::BTreeMap;
 use alloc::vec;
 use alloc::vec::Vec;
 
 use uom::si::electrical_resistance::ohm;
 
 use super::bank::Ends;
-use super::flow::{Flows, Wired, loop_ohms};
+use super::flow::{Flows, Loops, Wired};
 use super::graph::{Item, Tree};
-use super::model::Return;
+use super::model::{CircuitEntry, Return};
 use super::system::Site;
 use crate::cable::{Conductor, least_linear_resistance};
 use crate::network::{FaultNode, FaultState, Source, prospective};
@@ -40,7 +39,7 @@ impl Fault {
 }
 
 impl Flows {
-    pub fn take_faults(&mut self, site: &Site, tree: &Tree, banks: &[Ends], wired: &[Wired]) {
+    pub fn take_faults(&mut self, tree: &Tree, banks: &[Ends], loops: &Loops) {
         let source = |item: Item, pick: fn(&Ends) -> Option<Source>| match item {
             Item::Bank(i) => banks.get(i).and_then(pick),
             _ => None,
@@ -66,20 +65,13 @@ impl Flows {
         };
         // One bank of unknown current makes every greatest sum a lower bound, and the least unknown.
         let complete = !unknown(|e| e.strongest);
-        let hot: BTreeMap<usize, f64> = tree
-            .nodes
-            .iter()
-            .filter_map(|n| n.circuit)
-            .map(|c| (c, loop_ohms(site, wired, c, None)))
-            .collect();
-        let hot = |c: usize| hot.get(&c).copied().unwrap_or(0.0);
-        let strongest = run(|e| e.strongest, None, &|c| cold_ohms(site, wired, c));
+        let strongest = run(|e| e.strongest, None, &|c| loops.cold(c));
         // The least current flows with one bank alone, the others disconnected.
         let weakest: Vec<Vec<FaultState>> = tree
             .nodes
             .iter()
             .filter(|n| matches!(n.item, Item::Bank(_)) && !unknown(|e| e.weakest))
-            .filter_map(|n| run(|e| e.weakest, Some(n.item), &hot))
+            .filter_map(|n| run(|e| e.weakest, Some(n.item), &|c| loops.hot(c)))
             .collect();
         let by_thumb = tree.nodes.iter().any(|n| match n.item {
             Item::Bank(i) => banks.get(i).is_some_and(|e| e.by_thumb),
@@ -105,10 +97,7 @@ impl Flows {
 }
 
 /// The least loop of a circuit: metal at the coldest ambient, full area, joints left out (R6).
-fn cold_ohms(site: &Site, wired: &[Wired], index: usize) -> f64 {
-    let Some((circuit, (positive, negative, _))) = site.circuits.get(index).zip(wired.get(index)) else {
-        return 0.0;
-    };
+pub(super) fn cold_ohms(site: &Site, circuit: &CircuitEntry, (positive, negative, _): &Wired) -> f64 {
     let of = |conductor: &Conductor, length: Length| -> f64 {
         least_linear_resistance(conductor, site.ambient.0).map_or(0.0, |(r, _)| {
             let run: ElectricalResistance = r * length;

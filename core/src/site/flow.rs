@@ -10,9 +10,9 @@ use uom::si::electrical_resistance::ohm;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::energy::load_of;
-use super::fault::Fault;
+use super::fault::{Fault, cold_ohms};
 use super::graph::{Graph, Item, Tree, path_to};
-use super::model::{LoadKind, Return};
+use super::model::{CircuitEntry, LoadKind, Return};
 use super::plan::sources;
 use super::state::{Solver, State};
 use super::system::{BankEntry, Site};
@@ -20,14 +20,14 @@ use crate::cable::{Conductor, linear_resistance};
 use crate::error::Error;
 use crate::load::{LoadSet, MaximalSets, maximal_sets};
 use crate::network::Source;
-use crate::quantity::{ElectricalResistance, Length, ThermodynamicTemperature};
+use crate::quantity::{ElectricPotential, ElectricalResistance, Length, ThermodynamicTemperature};
 use crate::rules::LoadUse;
 
 /// Sets of loads that are solved apart; beyond it all run at once, which is never too little.
 const MOST_SETS: usize = 64;
 
 /// What flows in one circuit.
-#[derive(Clone, Copy, Debug)]
+#[derive(Clone, Copy, Debug, PartialEq)]
 pub(super) struct Flow {
     /// Design current, A.
     pub current: f64,
@@ -104,19 +104,10 @@ impl Flows {
 }
 
 impl Flows {
-    pub fn new(
-        site: &Site,
-        graph: &Graph,
-        trees: &[Tree],
-        wired: &[Wired],
-        temperatures: &[Option<f64>],
-    ) -> Self {
+    pub fn new(site: &Site, network: &Network, trees: &[Tree], loops: &Loops) -> Self {
+        let graph = &network.graph;
         let banks = sources(site);
-        // Once a pass: every state of the network reads them.
-        let ohms: Vec<f64> = (0..site.circuits.len())
-            .map(|index| loop_ohms(site, wired, index, temperatures.get(index).copied().flatten()))
-            .collect();
-        let ohms = |index: usize| ohms.get(index).copied().unwrap_or(0.0);
+        let ohms = |index: usize| loops.now(index);
         let mut flows = Self {
             circuits: vec![none(); site.circuits.len()],
             collapse: None,
@@ -135,10 +126,10 @@ impl Flows {
                 })
                 .fold(0.0, f64::max);
             flows.describe(site, tree, bank.nominal.get::<volt>(), highest, &ohms);
-            flows.take_faults(site, tree, &banks, wired);
+            flows.take_faults(tree, &banks, loops);
         }
         let drawn = graph.drawn_by_links();
-        let mut volts = flows.take_states(site, graph, (&drawn, &drawn), &ohms);
+        let mut volts = flows.take_states(site, network, (&drawn, &drawn), &ohms);
         // A stated current above what the loads draw flows to the circuit's end, through all before it; at the highest
         // voltage it is left out, since it would take volts, and so current, from resistive loads.
         let mut at_low = drawn.clone();
@@ -154,7 +145,7 @@ impl Flows {
             above_loads |= stated > low;
         }
         if above_loads {
-            volts = flows.take_states(site, graph, (&at_low, &drawn), &ohms);
+            volts = flows.take_states(site, network, (&at_low, &drawn), &ohms);
         }
         flows.take_links(site, graph, trees, &volts);
         // Stated currents and the user's own diversity.
@@ -261,54 +252,151 @@ impl Flows {
     fn take_states(
         &mut self,
         site: &Site,
-        graph: &Graph,
+        network: &Network,
         (at_low, at_high): (&BTreeMap<Item, f64>, &BTreeMap<Item, f64>),
         ohms: &impl Fn(usize) -> f64,
     ) -> BTreeMap<Item, f64> {
         let mut volts = BTreeMap::new();
-        let mut low: Vec<Vec<State>> = vec![Vec::new(); site.circuits.len()];
-        let mut high = low.clone();
-        for island in &graph.islands() {
-            let Some(first) = root_bank(site, island) else { continue };
-            let sets = together(site, island);
-            for (off, bank) in sets.iter().flat_map(|off| island.nodes.iter().map(move |n| (off, n.item))) {
-                let Item::Bank(bank) = bank else { continue };
-                let solver = Solver { site, drawn: at_low, nominal: first.nominal, ohms, off };
+        let mut low: Vec<State> = Vec::with_capacity(site.circuits.len());
+        let mut high = Vec::new();
+        let resistive = any_resistive(site);
+        for island in &network.islands {
+            for (off, (bank, tree)) in
+                island.sets.iter().flat_map(|off| island.seen_from.iter().map(move |seen| (off, seen)))
+            {
+                let Some(bank) = site.banks.get(*bank) else { continue };
+                let solver = Solver { site, drawn: at_low, nominal: island.nominal, ohms, off };
                 let solver_high = Solver { drawn: at_high, ..solver };
-                let (Some(tree), Some(bank)) = (graph.island_from(bank), site.banks.get(bank)) else {
-                    continue;
-                };
-                let solved = solver.solve(&tree, bank.cut_off).unwrap_or_else(|error| {
-                    self.note_collapse(&tree, error);
-                    solver.linear(&tree, bank.cut_off)
+                let solved = solver.solve(tree, bank.cut_off).unwrap_or_else(|error| {
+                    self.note_collapse(tree, error);
+                    solver.linear(tree, bank.cut_off)
                 });
-                for state in solver.states(&tree, &solved, bank.cut_off.get::<volt>()) {
-                    if let Some(list) = low.get_mut(state.circuit) {
-                        list.push(state);
+                solver.states(tree, &solved, bank.cut_off.get::<volt>(), &mut low);
+                // Only links read them.
+                if !network.graph.links.is_empty() {
+                    for (node, state) in tree.nodes.iter().zip(&solved) {
+                        volts.entry(node.item).or_insert(state.voltage.get::<volt>());
                     }
                 }
-                for (node, state) in tree.nodes.iter().zip(&solved) {
-                    volts.entry(node.item).or_insert(state.voltage.get::<volt>());
-                }
-                if any_resistive(site)
-                    && let Ok(solved) = solver_high.solve(&tree, bank.highest)
-                {
-                    for state in solver_high.states(&tree, &solved, bank.highest.get::<volt>()) {
-                        if let Some(list) = high.get_mut(state.circuit) {
-                            list.push(state);
-                        }
-                    }
+                if resistive && let Ok(solved) = solver_high.solve(tree, bank.highest) {
+                    solver_high.states(tree, &solved, bank.highest.get::<volt>(), &mut high);
                 }
             }
         }
-        for (index, (low, high)) in low.iter().zip(&high).enumerate() {
-            let Some(flow) = self.circuits.get_mut(index) else { continue };
+        // By circuit, in the order of the states.
+        low.sort_by_key(|state| state.circuit);
+        high.sort_by_key(|state| state.circuit);
+        let (mut low, mut high) = (low.as_slice(), high.as_slice());
+        for (index, (flow, before)) in self.circuits.iter_mut().zip(&mut self.before).enumerate() {
+            let (low, high) = (first_of(&mut low, index), first_of(&mut high, index));
             flow.take(low, high);
-            if let (Some(slot), Some(lowest)) = (self.before.get_mut(index), lowest(low)) {
-                *slot = lowest.before;
+            if let Some(lowest) = lowest(low) {
+                *before = lowest.before;
             }
         }
         volts
+    }
+}
+
+/// Takes the states of a circuit from the front.
+fn first_of<'a>(states: &mut &'a [State], circuit: usize) -> &'a [State] {
+    let count = states.iter().take_while(|state| state.circuit == circuit).count();
+    let (own, rest) = states.split_at_checked(count).unwrap_or((&[], *states));
+    *states = rest;
+    own
+}
+
+/// What of a site's network does not depend on conductors: found once, read in every pass.
+pub(super) struct Network {
+    pub graph: Graph,
+    islands: Vec<Island>,
+}
+
+struct Island {
+    /// Nominal voltage of its first bank.
+    nominal: ElectricPotential,
+    /// Loads that do not run, for each of the largest sets that meet.
+    sets: Vec<Vec<bool>>,
+    /// The island as each of its banks sees it.
+    seen_from: Vec<(usize, Tree)>,
+}
+
+impl Network {
+    pub fn new(site: &Site) -> Self {
+        let graph = Graph::new(site);
+        let island = |island: &Tree| {
+            let first = root_bank(site, island)?;
+            let seen = |bank: usize| Some((bank, graph.island_from(bank)?));
+            let banks = island.nodes.iter().filter_map(|n| match n.item {
+                Item::Bank(bank) => Some(bank),
+                _ => None,
+            });
+            Some(Island {
+                nominal: first.nominal,
+                sets: together(site, island),
+                seen_from: banks.filter_map(seen).collect(),
+            })
+        };
+        let islands = graph.islands().iter().filter_map(island).collect();
+        Self { graph, islands }
+    }
+}
+
+/// Loop resistances of all circuits, ohm: kept from pass to pass where nothing changed.
+#[derive(Default)]
+pub(super) struct Loops(Vec<Loop>);
+
+struct Loop {
+    wired: Wired,
+    at_degC: Option<f64>,
+    now: f64,
+    hot: f64,
+    cold: f64,
+}
+
+impl Loops {
+    /// Takes each circuit's conductors and their temperature.
+    pub fn update(&mut self, site: &Site, all: impl Iterator<Item = (Wired, Option<f64>)>) {
+        for (index, ((wired, at_degC), circuit)) in all.zip(&site.circuits).enumerate() {
+            let known = self.0.get_mut(index);
+            if known.as_ref().is_some_and(|k| k.at_degC == at_degC && k.wired == wired) {
+                continue;
+            }
+            let now = loop_ohms(circuit, &wired, at_degC);
+            let same_metal = |k: &Loop| (k.wired.0, k.wired.1) == (wired.0, wired.1);
+            let cold = match &known {
+                Some(k) if same_metal(k) => k.cold,
+                _ => cold_ohms(site, circuit, &wired),
+            };
+            let hot = match &known {
+                Some(k) if k.wired == wired => k.hot,
+                _ => loop_ohms(circuit, &wired, None),
+            };
+            let new = Loop { wired, at_degC, now, hot, cold };
+            match known {
+                Some(known) => *known = new,
+                None => self.0.push(new),
+            }
+        }
+    }
+
+    fn of(&self, circuit: usize, pick: fn(&Loop) -> f64) -> f64 {
+        self.0.get(circuit).map_or(0.0, pick)
+    }
+
+    /// At its temperature, or at the insulation's rating where none is known yet.
+    pub fn now(&self, circuit: usize) -> f64 {
+        self.of(circuit, |l| l.now)
+    }
+
+    /// At the insulation's rating.
+    pub fn hot(&self, circuit: usize) -> f64 {
+        self.of(circuit, |l| l.hot)
+    }
+
+    /// The least it can be.
+    pub fn cold(&self, circuit: usize) -> f64 {
+        self.of(circuit, |l| l.cold)
     }
 }
 
@@ -423,10 +511,7 @@ fn any_resistive(site: &Site) -> bool {
 }
 
 /// Loop of a circuit at a conductor temperature, or at the insulation's rating where none is known yet.
-pub(super) fn loop_ohms(site: &Site, wired: &[Wired], index: usize, at_degC: Option<f64>) -> f64 {
-    let Some((circuit, (positive, negative, joints))) = site.circuits.get(index).zip(wired.get(index)) else {
-        return 0.0;
-    };
+fn loop_ohms(circuit: &CircuitEntry, (positive, negative, joints): &Wired, at_degC: Option<f64>) -> f64 {
     let of = |conductor: &Conductor, length: Length| -> f64 {
         let at = ThermodynamicTemperature::new::<degree_celsius>(
             at_degC.unwrap_or_else(|| conductor.insulation.rating_degC()),

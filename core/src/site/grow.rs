@@ -2,6 +2,7 @@
 
 use alloc::format;
 use alloc::string::ToString;
+use alloc::vec;
 use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
@@ -16,13 +17,20 @@ use crate::circuit::{Checked, Outcome, capacity};
 use crate::rules::{Check, LoadUse};
 
 /// Enlarges what fails; `true` where something grew.
+///
+/// `apart`: a shared run grows in each part of the network that has no run that can grow in common with another's;
+/// else one in all.
 pub(super) fn enlarge(
     site: &Site,
     drafts: &mut [Draft],
     planned: &[Option<Planned>],
     flows: &Flows,
+    apart: bool,
 ) -> Result<bool, Problems> {
     let mut grew = false;
+    // Runs on the path of one whose shared run has grown: what they feed waits for the next pass.
+    let mut waits = vec![false; if apart { planned.len() } else { 0 }];
+    let mut waiting = false;
     let mut problems = Vec::new();
     // Volts won by the next size for the metal it takes: ρ·I·l·(1/A − 1/A') over (A' − A)·l. Growing the best of these
     // first spreads the metal over a path as evenly as the sizes allow (A goes with √I).
@@ -47,6 +55,9 @@ pub(super) fn enlarge(
                 .find(|c| c.is_obstacle() && path == is_of_path(c.check))
                 .copied()
         };
+        if waiting && flows.path(circuit).iter().any(|&c| waits.get(c).copied().unwrap_or(false)) {
+            continue;
+        }
         // What a larger conductor of this circuit mends.
         if let Some(check) = failed(false).filter(|c| mended_by_size(c.check))
             && p.designed()
@@ -71,12 +82,22 @@ pub(super) fn enlarge(
         match worst {
             Some((c, _)) if c == circuit => grew |= grow(c, drafts),
             // A shared run grows once in a pass: the next pass sees what it won.
-            Some((c, _)) => return Ok(grow(c, drafts)),
+            Some((c, _)) if !apart => return Ok(grow(c, drafts)),
+            Some((c, _)) => {
+                for &on_path in path.iter().filter(|&&c| can_grow(drafts, c)) {
+                    if let Some(slot) = waits.get_mut(on_path) {
+                        *slot = true;
+                    }
+                }
+                waiting = true;
+                grew |= grow(c, drafts);
+            }
             None if p.designed() => problems.push(cannot_serve(site, circuit, p, &check)),
             None => {}
         }
     }
-    if problems.is_empty() { Ok(grew) } else { Err(Problems(problems, 0)) }
+    // A shared run that grew may yet serve those.
+    if problems.is_empty() || waiting { Ok(grew) } else { Err(Problems(problems, 0)) }
 }
 
 /// Notes the far ends of designed circuits that need a device of their own; `true` where one was added.

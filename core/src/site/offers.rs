@@ -181,15 +181,15 @@ impl Offers {
     }
 
     /// The device that suits a run: the first offer, in the order of the stock, whose smallest sufficient rating
-    /// fails no check; else the one that fails fewest.
+    /// fails no check; else the one that fails fewest. With the judgement of the run behind it.
     pub fn best(
         &self,
         run: &Run,
         draft: &Draft,
         bare: &Judgement,
         stated: Option<&DeviceEntry>,
-    ) -> Option<Guard> {
-        let mut fallback: Option<(usize, Guard)> = None;
+    ) -> Option<(Guard, Judgement)> {
+        let mut fallback: Option<(usize, Guard, Judgement)> = None;
         // What is on the shelf of a stated family comes before the rest.
         let of_family = |o: &&OwnedOffer| stated.and_then(|s| s.family).is_none_or(|f| f == o.family);
         let shelf = self.devices.iter();
@@ -244,13 +244,13 @@ impl Offers {
             let Ok(judged) = judge(run, &draft.positive, &draft.negative, Some(&guard)) else { continue };
             let failures = judged.checks.iter().filter(|c| c.outcome == Outcome::Failed).count();
             if failures == 0 {
-                return Some(guard);
+                return Some((guard, judged));
             }
-            if fallback.is_none_or(|(fewest, _)| failures < fewest) {
-                fallback = Some((failures, guard));
+            if fallback.as_ref().is_none_or(|(fewest, ..)| failures < *fewest) {
+                fallback = Some((failures, guard, judged));
             }
         }
-        fallback.map(|(_, guard)| guard)
+        fallback.map(|(_, guard, judged)| (guard, judged))
     }
 }
 

@@ -140,6 +140,8 @@ pub struct BankPart {
     pub stud: Option<Stud>,
     /// `temperature = ["5 degC", "30 degC"]` of the cells.
     pub temperature: Option<(ThermodynamicTemperature, ThermodynamicTemperature)>,
+    /// `cold_capacity = "60 %"`: part of the capacity left at its coldest, by its maker.
+    pub cold_capacity: Option<Ratio>,
     /// `depth = "80 %"`: greatest.
     pub depth: Option<Ratio>,
     /// `daily_depth = "20 %"`.
@@ -205,6 +207,7 @@ impl BankPart {
             charge_from: None,
             stud: None,
             temperature: None,
+            cold_capacity: None,
             depth: None,
             daily_depth: None,
             disconnect: None,

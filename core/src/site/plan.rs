@@ -16,8 +16,8 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::bank;
 use super::fault::Fault;
-use super::flow::{Flow, Flows};
-use super::graph::{Graph, Item, Tree};
+use super::flow::{Flow, Flows, Loops, Network};
+use super::graph::{Item, Tree};
 use super::grow::{add_far_devices, enlarge, relieve_collapse, restart_leaves};
 use super::model::{CircuitEntry, LoadEntry, Return};
 use super::offers::{Offers, complete, joints};
@@ -87,9 +87,25 @@ pub(super) struct Planned {
     /// Circuit whose device guards this one from further up, where it has none of its own.
     pub guarded_by: Option<usize>,
     pub flow: Flow,
+    /// A device at its far end was asked for.
+    far: bool,
+    /// The circuit with a device next further up, and that device.
+    above: Option<(usize, Guard)>,
 }
 
 impl Planned {
+    /// Whether a task is the one that was judged: the same numbers give the same result.
+    fn answers(&self, task: &Task<'_>) -> bool {
+        let draft = task.draft;
+        self.flow == task.flow
+            && self.offered == draft.offered
+            && self.positive == draft.positive
+            && self.negative == draft.negative
+            && self.run.joints == draft.joints
+            && self.far == task.far
+            && self.above == task.above
+    }
+
     pub fn designed(&self) -> bool {
         self.offered.is_some()
     }
@@ -117,10 +133,20 @@ pub(super) struct Draft {
     pub joints: ElectricalResistance,
 }
 
+/// Passes in which one shared run alone grows, until temperatures have found themselves; then one for each part of the
+/// network that has nothing in common with the others.
+const ALONE: usize = 6;
+
 /// Makes the plan.
 pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
-    let graph = Graph::new(site);
-    let trees = graph.trees();
+    // What is refused is told as it stands where one run alone grows at a time.
+    planned(site, ALONE).or_else(|_| planned(site, usize::MAX))
+}
+
+/// Makes the plan; after so many passes parts that have nothing in common grow at once.
+fn planned(site: &Site, alone: usize) -> Result<Plan, Problems> {
+    let network = Network::new(site);
+    let trees = network.graph.trees();
     let offers = Offers::new(site);
     let mut problems = Vec::new();
     let mut drafts: Vec<Draft> = Vec::with_capacity(site.circuits.len());
@@ -144,16 +170,21 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
     let mut far_devices = vec![false; site.circuits.len()];
     // What the whole plan said to the next smaller size, where the circuit alone had nothing against it.
     let mut tried_out: Vec<Option<Reason>> = vec![None; site.circuits.len()];
+    let mut planned: Vec<Option<Planned>> = Vec::new();
+    planned.resize_with(site.circuits.len(), || None);
+    let fixed = (trees.as_slice(), feeding.as_slice(), &offers);
+    let mut loops = Loops::default();
+    let mut flows_of = |drafts: &[Draft], temperatures: &[Option<f64>]| {
+        let wired = drafts.iter().map(|d| (d.positive, d.negative, d.joints));
+        loops.update(site, wired.zip(temperatures.iter().copied()));
+        Flows::new(site, &network, &trees, &loops)
+    };
+    // Passes since all was last begun anew.
+    let mut passes = 0;
     for _ in 0..=most {
-        let pass = |drafts: &[Draft], temperatures: &[Option<f64>], far_devices: &[bool]| {
-            let conductors: Vec<(Conductor, Conductor, ElectricalResistance)> =
-                drafts.iter().map(|d| (d.positive, d.negative, d.joints)).collect();
-            let flows = Flows::new(site, &graph, &trees, &conductors, temperatures);
-            let planned = judge_all(site, &trees, &offers, drafts, &feeding, far_devices, &flows)
-                .map_err(|problem| Problems(vec![problem], 0))?;
-            Ok::<_, Problems>((flows, planned))
-        };
-        let (flows, planned) = pass(&drafts, &temperatures, &far_devices)?;
+        let flows = flows_of(&drafts, &temperatures);
+        judge_all(site, fixed, (&drafts, &far_devices), &flows, &mut planned, |_, _| {})
+            .map_err(|problem| Problems(vec![problem], 0))?;
         if relieve_collapse(&flows, &mut drafts) {
             settled = false;
             continue;
@@ -161,15 +192,15 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         for ((draft, circuit), done) in drafts.iter_mut().zip(&site.circuits).zip(&planned) {
             draft.joints = joints(site, circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
         }
-        temperatures = planned
-            .iter()
-            .map(|p| p.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>()))
-            .collect();
-        if enlarge(site, &mut drafts, &planned, &flows)? {
+        for (slot, done) in temperatures.iter_mut().zip(&planned) {
+            *slot = done.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>());
+        }
+        passes += 1;
+        if enlarge(site, &mut drafts, &planned, &flows, passes > alone)? {
             settled = false;
         } else if !shared_found {
             // Shared runs are found; what hangs on them alone starts anew beside them, and grows no more than it must.
-            (shared_found, settled) = (true, false);
+            (shared_found, settled, passes) = (true, false, 0);
             restart_leaves(&trees, &mut drafts);
         } else if add_far_devices(site, &trees, &planned, &mut far_devices) {
             settled = false;
@@ -179,28 +210,61 @@ pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
         } else if !trimmed {
             // Growing one by one may leave a shared run a size larger than what came after it needs.
             trimmed = true;
-            let own = Neighbours::new(site, &offers, &planned, &flows);
+            let candidates: Vec<usize> = {
+                let own = Neighbours::new(site, &offers, &planned, &flows);
+                (0..drafts.len()).filter(|&c| own.spare(&drafts, c)).collect()
+            };
             let fewest = failures(&planned);
-            let candidates: Vec<usize> = (0..drafts.len()).filter(|&c| own.spare(&drafts, c)).collect();
-            for circuit in candidates {
-                let Some(thinner) = drafts.get(circuit).and_then(Draft::thinner) else { continue };
-                let Some(kept) = drafts.get_mut(circuit).map(|d| core::mem::replace(d, thinner)) else {
+            // What fits together fits one by one; where it does not, either half is tried alone.
+            let mut groups = vec![candidates];
+            while let Some(mut group) = groups.pop() {
+                let kept: Vec<(usize, Draft)> = group
+                    .iter()
+                    .filter_map(|&c| {
+                        let draft = drafts.get_mut(c)?;
+                        let thinner = draft.thinner()?;
+                        Some((c, core::mem::replace(draft, thinner)))
+                    })
+                    .collect();
+                if kept.is_empty() {
                     continue;
-                };
-                let (tried, judged) = pass(&drafts, &temperatures, &far_devices)?;
-                if tried.collapse.is_none() && failures(&judged) <= fewest {
+                }
+                let tried = flows_of(&drafts, &temperatures);
+                let mut before = Vec::new();
+                let judged =
+                    judge_all(site, fixed, (&drafts, &far_devices), &tried, &mut planned, |circuit, done| {
+                        before.push((circuit, done));
+                    });
+                if judged.is_ok() && tried.collapse.is_none() && failures(&planned) <= fewest {
                     settled = false;
-                } else if let Some(draft) = drafts.get_mut(circuit) {
-                    *draft = kept;
+                    continue;
+                }
+                if let [circuit] = *group.as_slice() {
+                    judged.map_err(|problem| Problems(vec![problem], 0))?;
                     if let Some(slot) = tried_out.get_mut(circuit) {
-                        *slot = first_obstacle(&judged, circuit);
+                        *slot = first_obstacle(&planned, circuit);
                     }
+                }
+                for (circuit, draft) in kept {
+                    if let Some(slot) = drafts.get_mut(circuit) {
+                        *slot = draft;
+                    }
+                }
+                for (circuit, done) in before {
+                    if let Some(slot) = planned.get_mut(circuit) {
+                        *slot = done;
+                    }
+                }
+                if group.len() > 1 {
+                    let later = group.split_off(group.len() / 2);
+                    groups.push(later);
+                    groups.push(group);
                 }
             }
         } else {
             let mut circuits = planned;
             explain(site, &offers, (&drafts, &tried_out), &flows, &mut circuits);
-            let links = graph.links.keys().copied().collect();
+            let links = network.graph.links.keys().copied().collect();
             return Ok(Plan { trees, circuits, links, collapsed: flows.collapsed });
         }
     }
@@ -273,17 +337,15 @@ fn feeding_ends(site: &Site, trees: &[Tree]) -> Vec<Feeds> {
     all
 }
 
+/// Judges what is not judged yet with these flows and drafts; hands over what each judgement takes the place of.
 fn judge_all(
     site: &Site,
-    trees: &[Tree],
-    offers: &Offers,
-    drafts: &[Draft],
-    feeding: &[Feeds],
-    far_devices: &[bool],
+    (trees, feeding, offers): (&[Tree], &[Feeds], &Offers),
+    (drafts, far_devices): (&[Draft], &[bool]),
     flows: &Flows,
-) -> Result<Vec<Option<Planned>>, Problem> {
-    let mut planned: Vec<Option<Planned>> = Vec::new();
-    planned.resize_with(site.circuits.len(), || None);
+    planned: &mut [Option<Planned>],
+    mut replaced: impl FnMut(usize, Option<Planned>),
+) -> Result<(), Problem> {
     for tree in trees {
         for node in &tree.nodes {
             let Some(index) = node.circuit else { continue };
@@ -291,9 +353,12 @@ fn judge_all(
                 (site.circuits.get(index), drafts.get(index), feeding.get(index), flows.circuits.get(index));
             let (Some(circuit), Some(draft), Some(&ends), Some(&flow)) = parts else { continue };
             // The device further up, for a circuit that has none of its own at its feeding end.
-            let upstream = tree.nodes.get(node.parent).and_then(|p| p.circuit).and_then(|above| {
-                let planned = planned.get(above)?.as_ref()?;
-                if planned.fitted.is_empty() { planned.guarded_by } else { Some(above) }
+            let above = tree.nodes.get(node.parent).and_then(|p| p.circuit).and_then(|above| {
+                let over = planned.get(above)?.as_ref()?;
+                match over.fitted.first() {
+                    Some(first) => Some((above, first.guard)),
+                    None => over.above,
+                }
             });
             let child = match node.item {
                 Item::Load(i) => site.loads.get(i),
@@ -301,23 +366,20 @@ fn judge_all(
             };
             // A bank at the far end feeds at once; a board may be guarded by the devices of what feeds it.
             let far = matches!(node.item, Item::Bank(_)) || far_devices.get(index).copied().unwrap_or(false);
-            let done = judge_one(
-                site,
-                offers,
-                &planned,
-                &Task { index, circuit, draft, ends, flow, reversed: node.reversed, upstream, far, child },
-            )
-            .map_err(|error| Problem {
+            let task = Task { index, circuit, draft, ends, flow, reversed: node.reversed, above, far, child };
+            let Some(slot) = planned.get_mut(index) else { continue };
+            if slot.as_ref().is_some_and(|done| done.answers(&task)) {
+                continue;
+            }
+            let done = judge_one(site, offers, &task).map_err(|error| Problem {
                 line: circuit.line,
                 place: format!("[[circuit]] \"{}\"", circuit.name),
                 text: error.to_string(),
             })?;
-            if let Some(slot) = planned.get_mut(index) {
-                *slot = Some(done);
-            }
+            replaced(index, core::mem::replace(slot, Some(done)));
         }
     }
-    Ok(planned)
+    Ok(())
 }
 
 struct Task<'a> {
@@ -327,20 +389,16 @@ struct Task<'a> {
     ends: Feeds,
     flow: Flow,
     reversed: bool,
-    upstream: Option<usize>,
+    /// The circuit with a device next further up, and that device.
+    above: Option<(usize, Guard)>,
     /// A designed circuit gets a device at its far end too.
     far: bool,
     /// The load at its far end, if it is one.
     child: Option<&'a LoadEntry>,
 }
 
-fn judge_one(
-    site: &Site,
-    offers: &Offers,
-    planned: &[Option<Planned>],
-    task: &Task<'_>,
-) -> Result<Planned, Error> {
-    let &Task { index, circuit, draft, ends, flow, reversed, upstream, far, child } = task;
+fn judge_one(site: &Site, offers: &Offers, task: &Task<'_>) -> Result<Planned, Error> {
+    let &Task { index, circuit, draft, ends, flow, reversed, above, far, child } = task;
     let run = run_of(site, circuit, draft, &flow);
     let bare = judge(&run, &draft.positive, &draft.negative, None)?;
     // The device at the end that the source feeds comes first; further ones see their own fault currents.
@@ -354,36 +412,32 @@ fn judge_one(
         }
         seen
     };
-    let fitted = fit(circuit, index, offers, &at, draft, &bare, (ends, far), reversed);
+    let (fitted, judged): (Vec<Fitted>, Vec<Option<Judgement>>) =
+        fit(circuit, index, offers, &at, draft, &bare, (ends, far), reversed).into_iter().unzip();
+    let mut judged = judged.into_iter();
+    // What was judged to choose a device is not judged again.
+    let mut own = |fitted: &Fitted| match judged.next().flatten() {
+        Some(judged) => Ok(judged),
+        None => judge(&at(fitted.end), &draft.positive, &draft.negative, Some(&fitted.guard)),
+    };
     let mut guarded_by = None;
-    let judgement = match (fitted.first(), upstream) {
-        (Some(first), _) => judge(&at(first.end), &draft.positive, &draft.negative, Some(&first.guard))?,
-        (None, Some(above)) => {
+    let judgement = match (fitted.first(), above) {
+        (Some(first), _) => own(first)?,
+        (None, Some((above, guard))) => {
             guarded_by = Some(above);
-            let guard =
-                planned.get(above).and_then(|p| p.as_ref()).and_then(|p| p.fitted.first()).map(|f| f.guard);
-            match guard {
-                Some(guard) => {
-                    let mut judged = judge(&run, &draft.positive, &draft.negative, Some(&guard))?;
-                    // Its terminals and supply are judged where it sits.
-                    judged.checks.retain(|c| {
-                        !matches!(
-                            c.check,
-                            Check::Termination | Check::DeviceSupply | Check::DeviceCarries | Check::Breaking
-                        )
-                    });
-                    judged
-                }
-                None => bare,
-            }
+            let mut judged = judge(&run, &draft.positive, &draft.negative, Some(&guard))?;
+            // Its terminals and supply are judged where it sits.
+            judged.checks.retain(|c| {
+                !matches!(
+                    c.check,
+                    Check::Termination | Check::DeviceSupply | Check::DeviceCarries | Check::Breaking
+                )
+            });
+            judged
         }
         (None, None) => bare,
     };
-    let further = fitted
-        .iter()
-        .skip(1)
-        .map(|f| judge(&at(f.end), &draft.positive, &draft.negative, Some(&f.guard)))
-        .collect::<Result<Vec<_>, _>>()?;
+    let further = fitted.iter().skip(1).map(own).collect::<Result<Vec<_>, _>>()?;
     let mut judgement = judgement;
     if circuit.starts_engine(child) && site.rules.exempts_cranking() {
         // Engine starting lasts seconds; the tables are for continuous current.
@@ -423,6 +477,8 @@ fn judge_one(
         reversed,
         guarded_by,
         flow,
+        far,
+        above,
     })
 }
 
@@ -508,7 +564,7 @@ fn fit(
     bare: &Judgement,
     (ends, far): (Feeds, bool),
     reversed: bool,
-) -> Vec<Fitted> {
+) -> Vec<(Fitted, Option<Judgement>)> {
     let mut fitted = Vec::new();
     if circuit.devices.is_empty() {
         let order = if reversed { [End::To, End::From] } else { [End::From, End::To] };
@@ -517,18 +573,13 @@ fn fit(
             if feeding
                 && (place == 0 || far)
                 && !circuit.no_device
-                && let Some(guard) = offers.best(&run_at(end), draft, bare, None)
+                && let Some((guard, judged)) = offers.best(&run_at(end), draft, bare, None)
             {
                 let kind = if guard.device.family.data().is_fuse { "fuse" } else { "breaker" };
                 let name = format!("{kind} {}{}", index + 1, if place == 0 { "" } else { "b" });
-                fitted.push(Fitted {
-                    name,
-                    guard,
-                    end,
-                    entry: None,
-                    designed: true,
-                    specified: offers.specifies(),
-                });
+                let specified = offers.specifies();
+                let own = Fitted { name, guard, end, entry: None, designed: true, specified };
+                fitted.push((own, Some(judged)));
             }
         }
         return fitted;
@@ -536,11 +587,14 @@ fn fit(
     for (entry, stated) in circuit.devices.iter().enumerate() {
         let complete = complete(stated);
         let guard = match complete {
-            Some(guard) => Some(guard),
-            None => offers.best(&run_at(stated.end), draft, bare, Some(stated)),
+            Some(guard) => Some((guard, None)),
+            None => {
+                let best = offers.best(&run_at(stated.end), draft, bare, Some(stated));
+                best.map(|(guard, judged)| (guard, Some(judged)))
+            }
         };
-        if let Some(guard) = guard {
-            fitted.push(Fitted {
+        if let Some((guard, judged)) = guard {
+            let own = Fitted {
                 name: stated.name.clone(),
                 guard,
                 end: stated.end,
@@ -549,12 +603,13 @@ fn fit(
                 specified: complete.is_none()
                     && offers.specifies()
                     && (stated.supply == Supply::NotStated || stated.breaking.is_none()),
-            });
+            };
+            fitted.push((own, judged));
         }
     }
     // The device at the source's end first.
     let first = if reversed { End::To } else { End::From };
-    fitted.sort_by_key(|f| f.end != first);
+    fitted.sort_by_key(|(f, _)| f.end != first);
     fitted
 }
 

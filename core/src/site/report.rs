@@ -16,7 +16,7 @@ use super::model::{CircuitEntry, Document, Return};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
 use super::sheet::{Label, MaintenanceTask, Meter, Purchase, Step, SwitchingStep, paper, purchases};
-use super::system::Site;
+use super::system::{BankEntry, FeedKind, Site};
 use super::wiring::findings;
 use crate::battery::Chemistry;
 use crate::cable::Conductor;
@@ -306,9 +306,13 @@ fn system(site: &Site) -> Vec<String> {
         })
         .collect();
     let earth = site.rules.set().terms.earth;
+    let points = match site.place.bonds {
+        Some(1) | None => "one point".to_string(),
+        Some(count) => format!("{count} points"),
+    };
     lines.push(match site.earthing {
-        Earthing::Negative => format!("negative pole to {earth} at one point"),
-        Earthing::Positive => format!("positive pole to {earth} at one point"),
+        Earthing::Negative => format!("negative pole to {earth} at {points}"),
+        Earthing::Positive => format!("positive pole to {earth} at {points}"),
         Earthing::Floating => format!("neither pole to {earth}"),
     });
     lines.push(format!(
@@ -489,6 +493,31 @@ fn not_covered(site: &Site) -> Vec<String> {
         ));
     }
     lines.push("loads and inverters that can feed back: every one is taken for a load only".to_string());
+    let bare: Vec<&str> = site
+        .circuits
+        .iter()
+        .filter(|c| c.size.is_some() && (c.from_lug.is_none() || c.to_lug.is_none()))
+        .map(|c| c.name.as_str())
+        .collect();
+    if !bare.is_empty() {
+        lines.push(format!(
+            "whether lugs fit, where the stud of a terminal or the lug is not stated: {}",
+            bare.join(", ")
+        ));
+    }
+    if let Some(from) = site.rules.pv().arc_fault_from {
+        let above = |feed: &&BankEntry| {
+            matches!(feed.kind, FeedKind::Array(_)) && feed.highest.get::<volt>() > from.value
+        };
+        for feed in site.banks.iter().filter(above) {
+            lines.push(format!(
+                "arc-fault protection of array \"{}\", asked for above {} V ({})",
+                feed.name,
+                digits(from.value),
+                from.citation
+            ));
+        }
+    }
     if site.is_whole {
         lines.extend(
             [

@@ -59,26 +59,22 @@ impl<'a> Neighbours<'a> {
     /// What speaks against a conductor in the place of a circuit's own; `None` where the circuit is not in the plan.
     fn against(&self, drafts: &[Draft], circuit: usize, conductor: &Conductor) -> Option<Reason> {
         let planned = self.planned.get(circuit)?.as_ref()?;
-        let mut draft = drafts.get(circuit)?.clone();
-        draft.positive = *conductor;
-        draft.negative = *conductor;
+        let Draft { offered, joints, .. } = *drafts.get(circuit)?;
+        let draft =
+            Draft { positive: *conductor, negative: *conductor, offered, sizes: Vec::new(), joints };
         let stated = self.site.circuits.get(circuit)?;
         let bare = match judge(&planned.run, conductor, conductor, None) {
             Ok(bare) => bare,
             Err(error) => return Some(Reason::Error(error)),
         };
-        let guard = match planned.fitted.first() {
-            None => None,
-            Some(first) => {
+        let judged = match planned.fitted.first() {
+            None => bare,
+            Some(first) if first.designed => {
                 let entry = first.entry.and_then(|e| stated.devices.get(e));
-                if first.designed {
-                    self.offers.best(&planned.run, &draft, &bare, entry)
-                } else {
-                    Some(first.guard)
-                }
+                self.offers.best(&planned.run, &draft, &bare, entry).map_or(bare, |(_, judged)| judged)
             }
+            Some(first) => judge(&planned.run, conductor, conductor, Some(&first.guard)).ok()?,
         };
-        let judged = judge(&planned.run, conductor, conductor, guard.as_ref()).ok()?;
         if let Some(failed) = judged.first_failure() {
             return Some(Reason::Check(*failed));
         }

@@ -49,7 +49,10 @@ impl Flows {
             let Item::Charger(charger) = node.item else {
                 if amps > flow.current {
                     // By the sources, and no more by the loads.
-                    flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
+                    let loads = flow.low_current.unwrap_or(flow.current);
+                    flow.low_current = Some(loads);
+                    // A start flows the other way: it counts as far as it outgrows what the sources drive.
+                    flow.start = flow.start.map(|start| (loads + start - amps).max(0.0));
                     flow.current = amps;
                     flow.continuous_share = 1.0;
                     flow.charged = true;

@@ -187,14 +187,13 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         Some((beginning, libm::fabs(solved.get(index)?.current.get::<ampere>())))
     }
 
-    /// What each circuit of a solved tree carries and where its ends stand.
-    pub fn states(&self, tree: &Tree, solved: &[NodeState], emf: f64) -> Vec<State> {
+    /// What each circuit of a solved tree carries and where its ends stand, behind what is already in `states`.
+    pub fn states(&self, tree: &Tree, solved: &[NodeState], emf: f64, states: &mut Vec<State>) {
         let site = self.site;
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
         let starts = starts(self, tree, solved);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
-        let mut states = Vec::with_capacity(tree.nodes.len());
         for (index, node) in tree.nodes.iter().enumerate() {
             let (Some(circuit), Some(state)) = (node.circuit, solved.get(index)) else { continue };
             let above = solved.get(node.parent).map_or(emf, |s| s.voltage.get::<volt>());
@@ -218,7 +217,6 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 end: node.item,
             });
         }
-        states
     }
 }
 

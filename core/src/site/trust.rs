@@ -2,7 +2,6 @@
 //! as the return (R9), loads that do not run together (R16).
 
 use alloc::format;
-use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
 use uom::si::electrical_resistance::milliohm;
@@ -10,8 +9,7 @@ use uom::si::power::watt;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::finding::{Findings, Severity, digits};
-use super::flow::{Flows, Wired};
-use super::graph::Graph;
+use super::flow::{Flows, Loops, Network};
 use super::model::{CircuitEntry, Return};
 use super::plan::{Fitted, Plan, Planned};
 use super::system::Site;
@@ -112,19 +110,14 @@ pub(super) fn diversity(site: &Site, plan: &Plan, found: &mut Findings) {
         circuit.diversity = 1.0;
     }
     // What hangs on no bank is in no tree: its conductors are not read.
-    let wired: Vec<Wired> = plan
-        .circuits
-        .iter()
-        .map(|p| p.as_ref().unwrap_or(any))
-        .map(|p| (p.positive, p.negative, p.run.joints))
-        .collect();
-    let temperatures: Vec<Option<f64>> = plan
-        .circuits
-        .iter()
-        .map(|p| p.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>()))
-        .collect();
-    let graph = Graph::new(&together);
-    let flows = Flows::new(&together, &graph, &plan.trees, &wired, &temperatures);
+    let wired = plan.circuits.iter().map(|own| {
+        let p = own.as_ref().unwrap_or(any);
+        let temperature = own.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>());
+        ((p.positive, p.negative, p.run.joints), temperature)
+    });
+    let mut loops = Loops::default();
+    loops.update(&together, wired);
+    let flows = Flows::new(&together, &Network::new(&together), &plan.trees, &loops);
     for ((circuit, planned), flow) in site.circuits.iter().zip(&plan.circuits).zip(&flows.circuits) {
         let Some(planned) = planned.as_ref().filter(|_| circuit.diversity < 1.0) else { continue };
         let rating = |f: &Fitted| f.guard.device.rating.get::<ampere>();

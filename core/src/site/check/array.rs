@@ -29,6 +29,13 @@ pub(super) fn arrays(site: &Site, found: &mut Findings) {
             );
             continue;
         };
+        let controller = array.controller.and_then(|c| site.controllers.get(c));
+        if controller.is_some_and(|c| c.kind.is_none()) {
+            at.unmade(
+                ("R10", "array-not-checked"),
+                "whether its controller joins array and bank or tracks: taken for one that tracks; state kind",
+            );
+        }
         match result {
             Ok(strings) => {
                 for check in &strings.checks {

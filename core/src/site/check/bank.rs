@@ -205,14 +205,14 @@ fn cold(
         return;
     }
     let daily = demand.map(|d| d.greatest_day().charge(bank.nominal)).filter(|q| q.value > 0.0);
-    let left = capacity_left(chemistry, coldest).ok();
+    let left = part.cold_capacity.or_else(|| capacity_left(chemistry, coldest).ok().map(|left| left.value));
     let lasts = daily.and_then(|daily_demand| {
         cold_spell(&ColdSpell {
             chemistry,
             capacity: bank.capacity,
             start: StateOfCharge::new(1.0).ok()?,
             temperature: coldest,
-            cold_fraction: left?.value,
+            cold_fraction: left?,
             daily_demand,
             margin,
         })
@@ -284,7 +284,7 @@ fn disconnects(
         Ok(asked) => at.pass(
             "R14",
             &format!(
-                "disconnected at {} V, at least {} V",
+                "disconnected at {} V, at least {} V less one per cent of nominal",
                 digits(own.get::<volt>()),
                 digits(asked.disconnect.get::<volt>())
             ),
@@ -391,6 +391,10 @@ fn ventilation(bank: &BankEntry, chemistry: Chemistry, part: &BankPart, at: &mut
             at.pass("R20", "stands outdoors");
             return;
         }
+        None if vented && !part.designed => at.unmade(
+            ("R20", "bank-space-not-stated"),
+            "whether people live or sleep, or an engine stands, where its cells gas; state space",
+        ),
         _ => {}
     }
     let hours = flow.get::<cubic_meter_per_hour>();

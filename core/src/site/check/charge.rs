@@ -131,7 +131,7 @@ fn charged_through(site: &Site, bank: usize) -> Option<&str> {
 fn own_end(site: &Site, charger: &Charger, at: &mut At<'_>) {
     let ChargerKind::Generator(index) = charger.kind else { return };
     let Some(part) = site.generators.get(index) else { return };
-    if !matches!(part.kind, GeneratorKind::Alternator | GeneratorKind::Wind | GeneratorKind::Hydro) {
+    if part.kind != GeneratorKind::Alternator {
         return;
     }
     let guarded = site

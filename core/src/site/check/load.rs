@@ -6,7 +6,7 @@ use uom::si::energy::watt_hour;
 use uom::si::power::watt;
 
 use super::At;
-use crate::converter::{Inverter, InverterDemand, InverterVerdict, Suffices, Surge};
+use crate::converter::{Inverter, InverterVerdict, Suffices, Surge};
 use crate::load::HIGH_STANDING_SHARE;
 use crate::quantity::{ElectricPotential, ElectricalResistance, Time};
 use crate::site::complete::inverter::demand;
@@ -70,11 +70,6 @@ pub(super) fn loads(site: &Site, demands: &[Demand], found: &mut Findings) {
     }
 }
 
-/// How long a start lasts where nothing tells it. Common practice, no source.
-fn start_time() -> Time {
-    Time::new::<uom::si::time::second>(2.0)
-}
-
 /// Every inverter against its loads.
 pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
     for (index, entry) in site.inverters.iter().enumerate() {
@@ -93,9 +88,14 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
         let inverter = inverter_of(entry, lowest).map(|plain| with_surge(entry, plain));
         if let (Ok(inverter), Ok(asked)) = (inverter, asked)
             && asked.power.value > 0.0
-            && let Ok(verdict) =
-                inverter.judge(&InverterDemand { duration: asked.duration.or(Some(start_time())), ..asked })
+            && let Ok(verdict) = inverter.judge(&asked)
         {
+            if entry.surge.is_some() && entry.part.surge_time.is_none() && asked.starting > entry.power {
+                at.unmade(
+                    ("R16", "inverter-start-not-checked"),
+                    "for how long it bears its surge, against the largest start; state surge_time",
+                );
+            }
             judged(&mut at, &verdict);
         }
         inrush(site, entry, circuit, plan, &mut at);
@@ -103,8 +103,8 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
 }
 
 fn with_surge(entry: &InverterEntry, plain: Inverter) -> Inverter {
-    // Without a stated time the maker's word for a surge is taken for the seconds of a start.
-    let duration = entry.part.surge_time.unwrap_or_else(start_time);
+    // Without a stated time the power alone is compared; that the time is missing is told beside it.
+    let duration = entry.part.surge_time.unwrap_or_else(|| Time::new::<uom::si::time::hour>(1.0));
     Inverter { surge: entry.surge.map(|power| Surge { power, duration }), ..plain }
 }
 

@@ -271,6 +271,8 @@ pub(in crate::site) struct Duty {
     pub current: ElectricCurrent,
     pub depth: Option<Ratio>,
     pub daily_depth: Option<Ratio>,
+    /// Part of the capacity left at the coldest, by the maker.
+    pub left: Option<Ratio>,
     pub margin: Option<Ratio>,
     /// Least capacity that the sources may charge with all they give.
     pub least: Option<ElectricCharge>,
@@ -293,6 +295,7 @@ impl Duty {
             coldest: temperatures(site, part).0,
             current: demand.peak / nominal,
             depth: part.depth,
+            left: part.cold_capacity,
             daily_depth: part.daily_depth,
             margin: site.place.margin,
             least,
@@ -337,6 +340,7 @@ pub(in crate::site) fn needed(
     let mut steps = alloc::vec![ah("demand of the greatest day", duty.daily, None), days];
     let (mut capacity, time) = if matches!(chemistry, Chemistry::Lfp | Chemistry::Nmc) {
         let mut need = LithiumNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
+        need.stated_fraction = duty.left;
         need.window = duty.depth.unwrap_or(need.window);
         need.margin = duty.margin.unwrap_or(need.margin);
         let found = lithium_capacity(&need)?;
@@ -350,6 +354,7 @@ pub(in crate::site) fn needed(
         (found.capacity, None)
     } else {
         let mut need = LeadAcidNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
+        need.stated_factor = duty.left.map(|left| Ratio::new::<ratio>(1.0) / left);
         need.greatest_depth = duty.depth.unwrap_or(need.greatest_depth);
         need.daily_depth = duty.daily_depth.unwrap_or(need.daily_depth);
         need.margin = duty.margin.unwrap_or(need.margin);
@@ -587,6 +592,9 @@ fn charges_in_the_cold(site: &Site, stated: &BankPart, battery: &StockBattery) -
             digits(coldest),
             digits(from)
         ));
+    }
+    if stated.cold_capacity.is_some() {
+        return Ok(());
     }
     let factor = match battery.chemistry {
         Chemistry::Lfp | Chemistry::Nmc => {

@@ -14,9 +14,10 @@ use super::keys::{
 };
 use super::plant::{named, rising};
 use super::plant_keys::{
-    AIR_FLOW, BATTERY, BOARD_NAME, CELLS_AT, CHARGE_FROM, DAILY_DEPTH, DATA_LINK, DEPTH, DISCONNECT,
-    GREATEST_CHARGE, LINK, MAX_PARALLEL, MAX_SERIES, MIXED, OPENING, OPENS_UNDER_CHARGE, RATE, RECONNECT,
-    ROOM, ROUTE, SERIES, SHELF_COUNT, STRING_DEVICE, STRING_JOINT, TAKE_OFF, UNIT, UNIT_CAPACITY, UNITS,
+    AIR_FLOW, BATTERY, BOARD_NAME, CELLS_AT, CHARGE_FROM, COLD_CAPACITY, DAILY_DEPTH, DATA_LINK, DEPTH,
+    DISCONNECT, GREATEST_CHARGE, LINK, MAX_PARALLEL, MAX_SERIES, MIXED, OPENING, OPENS_UNDER_CHARGE, RATE,
+    RECONNECT, ROOM, ROUTE, SERIES, SHELF_COUNT, STRING_DEVICE, STRING_JOINT, TAKE_OFF, UNIT, UNIT_CAPACITY,
+    UNITS,
 };
 use super::sections::{ROOM_WORDS, TAKE_OFF_WORDS};
 use crate::battery::Chemistry;
@@ -54,6 +55,7 @@ pub(super) fn bank(entry: &mut Entry<'_, '_>, stock: &[StockBattery]) -> Option<
         charge_from: entry.quantity(&CHARGE_FROM),
         stud: entry.parsed(&STUD),
         temperature: rising(entry, &CELLS_AT),
+        cold_capacity: entry.quantity(&COLD_CAPACITY),
         depth: entry.quantity(&DEPTH),
         daily_depth: entry.quantity(&DAILY_DEPTH),
         disconnect: entry.quantity(&DISCONNECT),

@@ -67,6 +67,7 @@ pub(super) const GREATEST_CHARGE: Key = key("greatest_charge", "a current", "\"1
 pub(super) const CHARGE_FROM: Key = key("charge_from", "a temperature", "\"0 degC\"", AIR);
 pub(super) const CELLS_AT: Key =
     key("temperature", "a list of the least and the greatest temperature", "[\"5 degC\", \"30 degC\"]", AIR);
+pub(super) const COLD_CAPACITY: Key = key("cold_capacity", "a ratio", "\"60 %\"", PART);
 pub(super) const DEPTH: Key = key("depth", "a ratio", "\"80 %\"", PART);
 pub(super) const DAILY_DEPTH: Key = key("daily_depth", "a ratio", "\"20 %\"", PART);
 pub(super) const DISCONNECT: Key = key("disconnect", "a voltage", "\"22.8 V\"", VOLTS);

@@ -1,5 +1,6 @@
 //! Labels: one for each device, circuit end, board, bank, array and inverter, short enough to print.
 
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
@@ -14,7 +15,7 @@ use crate::array::open_circuit_voltage_cold;
 use crate::protection::End;
 use crate::quantity::Ratio;
 use crate::site::finding::digits;
-use crate::site::plan::Plan;
+use crate::site::plan::{Plan, Planned};
 use crate::site::system::{Array, FeedKind, Site};
 
 /// Characters of a line, and lines of a label: what a tape of 12 mm takes. Common practice, no source.
@@ -61,10 +62,12 @@ pub(super) fn labels(site: &Site, plan: &Plan) -> Vec<Label> {
     }
     boards(site, plan, &mut list);
     inverters(site, plan, &mut list);
+    let chargers: BTreeSet<&str> = site.chargers.iter().map(|c| c.name.as_str()).collect();
+    let arrays: BTreeSet<&str> = site.arrays.iter().map(|a| a.part.name.as_str()).collect();
     for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
         let Some(planned) = planned else { continue };
         let volts = system_words(planned.flow.nominal, planned.flow.highest);
-        let from_source = |name: &String| site.chargers.iter().any(|c| c.name == *name);
+        let from_source = |name: &String| chargers.contains(name.as_str());
         for fitted in &planned.fitted {
             let device = fitted.guard.device;
             let fed = if fitted.end == End::From { &circuit.to } else { &circuit.from };
@@ -79,10 +82,13 @@ pub(super) fn labels(site: &Site, plan: &Plan) -> Vec<Label> {
                 ],
             ));
         }
-        let of_array = |name: &String| site.arrays.iter().any(|a| a.part.name == *name);
+        let of_array = |name: &String| arrays.contains(name.as_str());
         let third = if of_array(&circuit.from) || of_array(&circuit.to) {
             "LIVE IN DAYLIGHT".to_string()
-        } else if (planned.feeds.from && planned.feeds.to) || from_source(&circuit.from) {
+        } else if (planned.feeds.from && planned.feeds.to)
+            || from_source(&circuit.from)
+            || planned.flow.charged
+        {
             "LIVE FROM BOTH ENDS".to_string()
         } else {
             let guarded = planned.fitted.first().map_or_else(String::new, |f| {
@@ -151,31 +157,32 @@ fn array_label(site: &Site, index: usize, array: &Array) -> Label {
     )
 }
 
-/// Sources that can put volts on a board by themselves: banks behind its circuits, and outputs that charge.
-fn sources_of(site: &Site, plan: &Plan, board: &str) -> usize {
-    let mut count = 0;
-    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
-        let Some(planned) = planned else { continue };
-        let towards = if circuit.to == board {
-            planned.feeds.from
-        } else if circuit.from == board {
-            planned.feeds.to
-        } else {
-            continue;
-        };
-        let other = if circuit.to == board { &circuit.from } else { &circuit.to };
-        count += usize::from(towards || site.chargers.iter().any(|c| c.name == *other));
-    }
-    count
+/// What hangs on a board: its first planned circuit, and the sources that can put volts on it by themselves: banks behind
+/// its circuits, and outputs that charge.
+#[derive(Default)]
+struct OnBoard<'a> {
+    first: Option<&'a Planned>,
+    sources: usize,
 }
 
 fn boards(site: &Site, plan: &Plan, list: &mut Vec<Label>) {
+    let mut all: BTreeMap<&str, OnBoard<'_>> =
+        site.boards.iter().map(|b| (b.name.as_str(), OnBoard::default())).collect();
+    let chargers: BTreeSet<&str> = site.chargers.iter().map(|c| c.name.as_str()).collect();
+    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+        let Some(planned) = planned else { continue };
+        let (from, to) = (circuit.from.as_str(), circuit.to.as_str());
+        for (own, other, towards) in [(to, from, planned.feeds.from), (from, to, planned.feeds.to)] {
+            if let Some(board) = all.get_mut(own) {
+                board.first.get_or_insert(planned);
+                board.sources += usize::from(towards || chargers.contains(other));
+            }
+        }
+    }
     for board in &site.boards {
-        let mut circuits = site.circuits.iter().zip(&plan.circuits);
-        let planned = circuits
-            .find_map(|(c, p)| (c.from == board.name || c.to == board.name).then_some(p.as_ref()).flatten());
-        let volts = planned.map_or_else(String::new, |p| system_words(p.flow.nominal, p.flow.highest));
-        let third = match (sources_of(site, plan, &board.name), board.busbar) {
+        let Some(on) = all.get(board.name.as_str()) else { continue };
+        let volts = on.first.map_or_else(String::new, |p| system_words(p.flow.nominal, p.flow.highest));
+        let third = match (on.sources, board.busbar) {
             (0 | 1, None) => String::new(),
             (0 | 1, Some(rating)) => format!("busbar {} A", digits(rating.get::<ampere>())),
             (2, _) => "TWO SOURCES: isolate both".to_string(),

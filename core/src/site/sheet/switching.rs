@@ -1,5 +1,6 @@
 //! In which order the parts are joined and taken apart (R10).
 
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::{String, ToString};
 use alloc::vec::Vec;
@@ -57,11 +58,25 @@ fn listed<'a>(
     names: impl Iterator<Item = &'a str>,
     words: fn(&Gear) -> String,
 ) -> String {
+    let names: Vec<&str> = names.collect();
+    // Circuits by what is asked for at either end, in the order of the document.
+    let mut joined: BTreeMap<&str, Vec<(&CircuitEntry, &Planned)>> =
+        names.iter().map(|&name| (name, Vec::new())).collect();
+    for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
+        let Some(planned) = planned else { continue };
+        for end in [Some(&circuit.from), Some(&circuit.to).filter(|to| **to != circuit.from)] {
+            if let Some(list) = end.and_then(|end| joined.get_mut(end.as_str())) {
+                list.push((circuit, planned));
+            }
+        }
+    }
+    let mut known = BTreeSet::new();
     let mut list: Vec<String> = Vec::new();
-    for name in names {
-        for (circuit, gear) in at(site, plan, name).filter(|(_, gear)| !gear.is_empty()) {
+    for &(circuit, planned) in names.iter().filter_map(|name| joined.get(name)).flatten() {
+        let gear = Gear::of(circuit, planned);
+        if !gear.is_empty() {
             let entry = format!("{} ({})", words(&gear), circuit.name);
-            if !list.contains(&entry) {
+            if known.insert(entry.clone()) {
                 list.push(entry);
             }
         }
@@ -75,7 +90,8 @@ fn with_gear(head: String, gear: &str) -> String {
 
 /// Boards that are fed from another board.
 fn feeders(site: &Site, plan: &Plan, words: fn(&Gear) -> String) -> String {
-    let board = |name: &str| site.boards.iter().any(|b| b.name == name);
+    let boards: BTreeSet<&str> = site.boards.iter().map(|b| b.name.as_str()).collect();
+    let board = |name: &String| boards.contains(name.as_str());
     let mut list = Vec::new();
     for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
         if let Some(planned) = planned
@@ -114,10 +130,10 @@ fn output<'a>(site: &'a Site, plan: &'a Plan, name: &'a str, words: fn(&Gear) ->
 
 /// Of a bank: what opens the way to boards and other banks. What leads to an inverter, a load or a source has its own step.
 fn bank_gear(site: &Site, plan: &Plan, bank: &BankEntry, words: fn(&Gear) -> String) -> String {
-    let shared = |name: &str| {
-        site.boards.iter().any(|b| b.name == name)
-            || site.banks.iter().any(|b| b.is_battery() && b.name == name)
-    };
+    let boards = site.boards.iter().map(|b| b.name.as_str());
+    let batteries = site.banks.iter().filter(|b| b.is_battery()).map(|b| b.name.as_str());
+    let all: BTreeSet<&str> = boards.chain(batteries).collect();
+    let shared = |name: &String| all.contains(name.as_str());
     let circuits =
         at(site, plan, &bank.name).filter(|(c, gear)| shared(&c.from) && shared(&c.to) && !gear.is_empty());
     let list: Vec<String> = circuits.map(|(c, gear)| format!("{} ({})", words(&gear), c.name)).collect();

@@ -426,7 +426,7 @@ fn maintenance_names_only_what_the_site_has() {
     assert!(lfp.contains("pack's own monitor") && !lfp.contains("electrolyte"));
     let floating = words(&RUN.replace("earthing = \"negative\"", "earthing = \"floating\""));
     assert!(floating.contains("volts of each to earth") && !floating.contains("bond"));
-    assert!(flooded.contains("the one bond to earth tight"));
+    assert!(flooded.contains("the bond to earth tight, and the only one"));
 }
 
 #[test]
