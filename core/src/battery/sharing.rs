@@ -93,7 +93,7 @@ pub struct Sharing {
 ///
 /// `current` is that of the whole bank, positive in discharge; nought shows what strings of different voltage drive
 /// through each other. `links` has one entry fewer than `strings`, and none for [`TakeOff::Busbar`]. `shares` takes
-/// the result, one for each string, and is written on success only in part on an error.
+/// the result, one for each string; on an error it may be written in part.
 ///
 /// # Errors
 /// [`Error::WrongCount`] where the slices do not go together; [`Error::OutOfRange`] where there is no string, a

@@ -10,9 +10,9 @@ use crate::quantity::Ratio;
 /// One counted cycle of a history.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct CountedCycle {
-    /// Difference of its ends.
+    /// Difference of its ends, in the unit of the history: depth of discharge as a part of the capacity.
     pub range: f64,
-    /// Middle between its ends.
+    /// Middle between its ends, in the same.
     pub mean: f64,
     /// 1 for a whole cycle, 0.5 for half of one.
     pub count: f64,

@@ -153,7 +153,7 @@ impl Report {
 /// use ampwright::site::{inspect, read};
 /// let site = read(include_str!("../../examples/sites/heron_point.toml")).map_err(|p| p.to_string())?;
 /// let report = inspect(&site).map_err(|p| p.to_string())?;
-/// assert!(report.to_string().contains("bank main"));
+/// assert!(report.to_string().contains("house main"));
 /// # Ok::<(), String>(())
 /// ```
 pub fn inspect(document: &Document) -> Result<Report, Problems> {
