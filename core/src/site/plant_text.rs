@@ -221,7 +221,10 @@ fn generator(line: &GeneratorLine, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         row(
             f,
             "recharge",
-            &format!("{:.1} h from the greatest depth to full, absorption tail included", time.get::<hour>()),
+            &format!(
+                "{:.1} h from the usual depth to full; lead-acid to 98 %, its absorption tail included",
+                time.get::<hour>()
+            ),
         )?;
     }
     steps(f, &line.steps)

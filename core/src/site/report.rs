@@ -377,6 +377,23 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
             lines.push(format!("terminals without mark taken for {} °C: {unmarked}", digits(usual)));
         }
     }
+    let stalled: Vec<&str> = site
+        .loads
+        .iter()
+        .filter(|l| l.start.is_some())
+        .filter(|l| {
+            let circuit = site.circuits.iter().position(|c| c.to == l.name);
+            let planned = circuit.and_then(|c| plan.circuits.get(c)).and_then(|p| p.as_ref());
+            planned.is_some_and(|p| p.fitted.iter().any(|f| f.designed))
+        })
+        .map(|l| l.name.as_str())
+        .collect();
+    if !stalled.is_empty() {
+        lines.push(format!(
+            "devices chosen to carry a start guard the cable, not a motor that stalls: {}",
+            stalled.join(", ")
+        ));
+    }
     if plan.circuits.iter().flatten().any(|p| p.fitted.iter().any(|f| f.designed)) {
         lines.push(
             "devices designed here sit at the source's end, within the unprotected length of the rule set, in every \
@@ -428,9 +445,31 @@ fn plant_assumptions(site: &Site) -> Vec<String> {
     }
     if site.loads.iter().any(|l| l.use_of.duty_hot.is_some()) {
         lines.push(
-            "duty of a load as stated at 20 °C, duty_hot at the greatest ambient, in a straight line between"
+            "duty of a load as stated at 20 °C, duty_hot at the greatest ambient, in a straight line between; taken at the mean temperature of each month"
                 .to_string(),
         );
+    }
+    for array in &site.arrays {
+        let m = &array.module;
+        let taken: Vec<&str> = [
+            (
+                m.voc_coefficient.is_none(),
+                "cold open-circuit voltage by the rule set's table, where it has one",
+            ),
+            (m.power_coefficient.is_none(), "-0.4 %/K of power, its hot voltage by that of open circuit"),
+            (m.isc_coefficient.is_none(), "0.05 %/K of short-circuit current"),
+            (m.noct.is_none(), "a NOCT of 47 °C"),
+        ]
+        .into_iter()
+        .filter_map(|(missing, words)| missing.then_some(words))
+        .collect();
+        if !taken.is_empty() {
+            lines.push(format!(
+                "module of array \"{}\": {} (common practice, no source; state its coefficients)",
+                array.part.name,
+                taken.join("; ")
+            ));
+        }
     }
     if !site.arrays.is_empty() {
         lines.push(format!(

@@ -57,9 +57,19 @@ pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
         disconnects(site, bank, chemistry, part, demand, &mut at);
         limits(bank, part, &mut at);
         ventilation(bank, chemistry, part, &mut at);
-        let drawn = drawn(site, plan, &bank.name);
-        sharing(bank, part, drawn, &mut at);
+        let carried = carried(site, plan, &bank.name);
+        sharing(bank, part, carried, &mut at);
     }
+}
+
+/// Greatest current through a bank's terminals, of charge or discharge.
+pub(in crate::site) fn carried(site: &Site, plan: &Plan, name: &str) -> ElectricCurrent {
+    site.circuits
+        .iter()
+        .zip(&plan.circuits)
+        .filter(|(c, _)| c.from == name || c.to == name)
+        .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current))
+        .sum()
 }
 
 /// Greatest current out of a bank.

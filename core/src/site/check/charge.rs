@@ -57,14 +57,10 @@ pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<Charg
             let volts =
                 charger.bank.and_then(|b| site.banks.get(b)).map_or(f64::NAN, |b| b.nominal.get::<volt>());
             let best = ElectricCurrent::new::<ampere>(rated / volts);
-            // Without an array, or with one that gives more, the controller's own output counts.
-            let nameplate = if rated > 0.0 && best < limit { best } else { limit };
+            // Its output limits it, in cold bright sun too; for hours it gives what the array is rated for.
+            let part = if rated > 0.0 && best < limit { Some(best / limit) } else { None };
             let load_dump = site.controllers.get(index).and_then(|c| c.load_dump).map(dumps);
-            ChargeSource {
-                controller_limit: Some(limit),
-                load_dump,
-                ..ChargeSource::new(SourceKind::Array, nameplate)
-            }
+            ChargeSource { lasting: part, load_dump, ..ChargeSource::new(SourceKind::Array, limit) }
         }
         ChargerKind::Generator(index) => {
             let part = site.generators.get(index)?;

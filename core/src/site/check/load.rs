@@ -6,6 +6,7 @@ use uom::si::energy::watt_hour;
 use uom::si::power::watt;
 
 use super::At;
+use crate::cable::least_linear_resistance;
 use crate::converter::{Inverter, InverterVerdict, Suffices, Surge};
 use crate::load::HIGH_STANDING_SHARE;
 use crate::quantity::{ElectricPotential, ElectricalResistance, Time};
@@ -115,11 +116,19 @@ fn judged(at: &mut At<'_>, verdict: &InverterVerdict) {
                    remedy: &'static str| match suffices {
         Suffices::Yes { given, asked } => at.pass(
             "R16",
-            &format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
+            &format!(
+                "{what}: {} VA, at least {} VA",
+                digits(given.get::<watt>()),
+                digits(asked.get::<watt>())
+            ),
         ),
         Suffices::No { given, asked } => at.nonconforming(
             slug,
-            format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
+            format!(
+                "{what}: {} VA, at least {} VA",
+                digits(given.get::<watt>()),
+                digits(asked.get::<watt>())
+            ),
             remedy,
         ),
         Suffices::TooShort { given, asked } => at.nonconforming(
@@ -168,9 +177,25 @@ fn inrush(site: &Site, entry: &InverterEntry, circuit: Option<usize>, plan: &Pla
         .fold(None, |least: Option<ElectricalResistance>, r| {
             Some(least.map_or(r, |l| if r < l { r } else { l }))
         });
-    let loop_ohms = planned.run.resistance_before + planned.judgement.resistance + behind.unwrap_or_default();
     let highest = planned.run.highest;
-    let peak = highest / loop_ohms;
+    // The greatest: what may flow at its circuit's beginning, through cold metal without joints (R6).
+    let upstream = planned
+        .run
+        .greatest_fault
+        .filter(|amps| amps.value > 0.0)
+        .map_or_else(|| planned.run.resistance_before + behind.unwrap_or_default(), |amps| highest / amps);
+    let cold = |conductor, length| {
+        least_linear_resistance(conductor, site.ambient.0).map_or_else(
+            |_| ElectricalResistance::default(),
+            |(r, _)| {
+                let run: ElectricalResistance = r * length;
+                run
+            },
+        )
+    };
+    let own = cold(&planned.positive, planned.run.positive_length)
+        + cold(&planned.negative, planned.run.negative_length);
+    let peak = highest / (upstream + own);
     let amps = peak.get::<uom::si::electric_current::ampere>();
     let rating =
         planned.fitted.first().map(|f| f.guard.device.rating.get::<uom::si::electric_current::ampere>());

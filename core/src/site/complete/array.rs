@@ -31,6 +31,8 @@ use crate::site::read::Problem;
 use crate::site::supply::{ARRAY_LOSS, day_energy, efficiency, module_power};
 use crate::site::system::{Array, BankEntry, Site};
 
+/// Sun-hours of the worst month below which the sun counts as low. Common practice, no source.
+const LOW_SUN_H: f64 = 3.0;
 const PRACTICE: Citation =
     Citation::new("common practice, no source", "dirt, mismatch, wiring", Seen::Practice);
 /// Most modules that are tried beyond the number that energy asks for: whole strings need a few more.
@@ -147,12 +149,19 @@ pub(super) fn design(
         let text = "a month without any sun carries a demand: no array can be sized for it; state the array and a generator";
         return Err(problem(weather.line, "[weather], in_plane".to_string(), text));
     }
+    // The table's words: weak sun asks for the ratio of critical loads.
+    let burden = |month: usize| {
+        let out = demand.mean.get(month).map_or(0.0, |d| d.total.get::<watt_hour>());
+        out / sun.get(month).map_or(1.0, Time::get::<hour>).max(1e-9)
+    };
+    let worst = (0..12).fold(0, |a, b| if burden(b) > burden(a) { b } else { a });
+    let low = sun.get(worst).is_some_and(|s| s.get::<hour>() < LOW_SUN_H);
     let wanted = Wanted {
         site,
         bank: entry,
         months: &demand.mean,
         sun,
-        class: if site.place.critical { LoadClass::Critical } else { LoadClass::NonCritical },
+        class: if site.place.critical || low { LoadClass::Critical } else { LoadClass::NonCritical },
         losses: {
             let shaded = stated.and_then(|a| a.shade).map_or(0.0, |s| s.get::<ratio>());
             // More than nine tenths lost are refused by the sizing.

@@ -76,7 +76,7 @@ fn nominal(
     document: &Document,
     site: &Site,
     part: &BankPart,
-    peak: Power,
+    peak: &dyn Fn(ElectricPotential) -> Power,
 ) -> (ElectricPotential, Option<Step>) {
     let unit = part.unit.or_else(|| stock::battery(document, part).map(|b| b.nominal));
     if let Some(stated) = part.nominal {
@@ -98,14 +98,14 @@ fn nominal(
     let chosen = fitting
         .iter()
         .copied()
-        .find(|v| peak.get::<watt>() / v <= PRACTICAL_CURRENT_A)
+        .find(|&v| peak(ElectricPotential::new::<volt>(v)).get::<watt>() / v <= PRACTICAL_CURRENT_A)
         .or_else(|| fitting.last().copied())
         .unwrap_or(12.0);
     let step = Step {
         what: format!(
             "nominal voltage: the least of 12, 24 and 48 V that suits every load's range and keeps all loads together, {} W, \
              within {} A",
-            digits(peak.get::<watt>()),
+            digits(peak(ElectricPotential::new::<volt>(chosen)).get::<watt>()),
             digits(PRACTICAL_CURRENT_A)
         ),
         value: chosen,
@@ -149,7 +149,7 @@ pub(super) fn provisional(
     document: &Document,
     site: &Site,
     stated: &BankPart,
-    peak: Power,
+    peak: &dyn Fn(ElectricPotential) -> Power,
 ) -> (BankEntry, Vec<Step>) {
     let chemistry = chemistry_of(document, stated).unwrap_or(Chemistry::Flooded);
     let (nominal, step) = nominal(document, site, stated, peak);

@@ -22,7 +22,7 @@ use crate::site::read::Problem;
 use crate::site::system::{InverterEntry, Site};
 
 /// Figures of a plain inverter. Common practice, no source.
-const PLAIN_EFFICIENCY: f64 = 0.85;
+pub(super) const PLAIN_EFFICIENCY: f64 = 0.85;
 const PLAIN_IDLE: f64 = 0.01;
 /// Plain inverters are bought in steps, W.
 const PLAIN_STEP_W: f64 = 100.0;

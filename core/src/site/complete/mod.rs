@@ -16,7 +16,6 @@ use super::lines::{Rejected, Step};
 use super::model::Document;
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
-use uom::si::electric_potential::volt;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
@@ -136,13 +135,15 @@ fn round(document: &Document, hint: &Hint) -> Result<(Site, Reasons), Problems> 
     let refused = |problems: Vec<Problem>| Err(Problems(problems, 0));
     let open_inverters = inverter::take(document, &mut site, &mut problems);
     let wishes = bank_wishes(document);
-    let peak = all_loads(&site);
+    let peak = |nominal| all_loads(&site, nominal);
     let mut first_steps = Vec::new();
+    let mut banks = Vec::new();
     for part in &wishes {
-        let (bank, steps) = bank::provisional(document, &site, part, peak);
-        site.banks.push(bank);
+        let (bank, steps) = bank::provisional(document, &site, part, &peak);
+        banks.push(bank);
         first_steps.push(steps);
     }
+    site.banks = banks;
     if let Some(nominal) = site.banks.first().map(|b| b.nominal)
         && let Err(problem) = inverter::design(document, &mut site, open_inverters, nominal, &mut reasons)
     {
@@ -220,11 +221,12 @@ fn bank_wishes(document: &Document) -> Vec<BankPart> {
     alloc::vec![BankPart::unstated(name)]
 }
 
-/// All loads at once, at nominal voltage; those behind inverters through a usual efficiency.
-fn all_loads(site: &Site) -> Power {
+/// All loads at once at a nominal voltage; those behind inverters through a usual efficiency.
+fn all_loads(site: &Site, nominal: ElectricPotential) -> Power {
     let one = |load: &super::model::LoadEntry| {
-        let power = load.power.or_else(|| load.current.map(|a| a * ElectricPotential::new::<volt>(12.0)));
-        power.unwrap_or_default() * f64::from(load.count)
+        let power = load.power.or_else(|| load.current.map(|a| a * nominal)).unwrap_or_default();
+        let each = if load.ac { power / inverter::PLAIN_EFFICIENCY } else { power };
+        each * f64::from(load.count)
     };
     site.loads.iter().map(one).sum()
 }
