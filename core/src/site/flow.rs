@@ -104,6 +104,33 @@ impl Flows {
 }
 
 impl Flows {
+    /// For each circuit the number of the branch it lies on: all that hangs on one circuit at a source.
+    pub fn branches(&self) -> Vec<usize> {
+        let mut branches: Vec<Option<usize>> = vec![None; self.before.len()];
+        let mut count = 0;
+        for circuit in 0..self.before.len() {
+            // Up to what is known or stands first, then down again.
+            let mut path = vec![circuit];
+            let mut known = branches.get(circuit).copied().flatten();
+            let mut here = circuit;
+            while let (None, Some(before)) = (known, self.before.get(here).copied().flatten()) {
+                here = before;
+                known = branches.get(here).copied().flatten();
+                path.push(here);
+            }
+            let branch = known.unwrap_or_else(|| {
+                count += 1;
+                count - 1
+            });
+            for circuit in path {
+                if let Some(slot) = branches.get_mut(circuit) {
+                    *slot = Some(branch);
+                }
+            }
+        }
+        branches.into_iter().map(|b| b.unwrap_or(0)).collect()
+    }
+
     pub fn new(site: &Site, network: &Network, trees: &[Tree], loops: &Loops) -> Self {
         let graph = &network.graph;
         let banks = sources(site);
@@ -267,11 +294,13 @@ impl Flows {
                 let Some(bank) = site.banks.get(*bank) else { continue };
                 let solver = Solver { site, drawn: at_low, nominal: island.nominal, ohms, off };
                 let solver_high = Solver { drawn: at_high, ..solver };
-                let solved = solver.solve(tree, bank.cut_off).unwrap_or_else(|error| {
+                let solution = solver.solve(tree, bank.cut_off);
+                let collapsed = solution.is_err();
+                let solved = solution.unwrap_or_else(|error| {
                     self.note_collapse(tree, error);
                     solver.linear(tree, bank.cut_off)
                 });
-                solver.states(tree, &solved, bank.cut_off.get::<volt>(), &mut low);
+                solver.states(tree, (&solved, collapsed), bank.cut_off.get::<volt>(), &mut low);
                 // Only links read them.
                 if !network.graph.links.is_empty() {
                     for (node, state) in tree.nodes.iter().zip(&solved) {
@@ -279,7 +308,7 @@ impl Flows {
                     }
                 }
                 if resistive && let Ok(solved) = solver_high.solve(tree, bank.highest) {
-                    solver_high.states(tree, &solved, bank.highest.get::<volt>(), &mut high);
+                    solver_high.states(tree, (&solved, false), bank.highest.get::<volt>(), &mut high);
                 }
             }
         }

@@ -32,6 +32,7 @@ mod state;
 mod supply;
 mod system;
 mod text;
+mod trials;
 mod trust;
 mod wiring;
 

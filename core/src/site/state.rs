@@ -155,7 +155,15 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
 
     /// The network once more while one node's own load starts (R3: solved): one of a kind draws its start current, an
     /// inverter its surge.
-    fn started(&self, tree: &Tree, index: usize, emf: f64) -> Option<(f64, f64)> {
+    ///
+    /// The source holds its terminals: of a network that does not collapse only the branch of that node matters.
+    fn started(
+        &self,
+        tree: &Tree,
+        branches: &mut Branches,
+        index: usize,
+        (emf, collapsed): (f64, bool),
+    ) -> Option<(f64, f64)> {
         let node = tree.nodes.get(index)?;
         if self.is_off(node.item) {
             return None;
@@ -180,19 +188,38 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
             load.current += ElectricCurrent::new::<ampere>(amps);
         }
         // Only now: most nodes start nothing.
-        let mut nodes = self.nodes(tree, None);
-        nodes.get_mut(index)?.load = load;
-        let Ok(solved) = run(&nodes, ElectricPotential::new::<volt>(emf)) else { return Some((0.0, 0.0)) };
-        let beginning = solved.get(node.parent)?.voltage.get::<volt>();
-        Some((beginning, libm::fabs(solved.get(index)?.current.get::<ampere>())))
+        let mut whole;
+        let (branch, place) = if collapsed {
+            // Another branch may be what collapses, and this start what relieves it.
+            whole = self.nodes(tree, None);
+            (&mut whole, index)
+        } else {
+            branches.of(self, tree, index)?
+        };
+        let starting = branch.get_mut(place)?;
+        let running = core::mem::replace(&mut starting.load, load);
+        let above = starting.parent;
+        let solved = run(branch, ElectricPotential::new::<volt>(emf));
+        branch.get_mut(place)?.load = running;
+        let Ok(solved) = solved else { return Some((0.0, 0.0)) };
+        let beginning = solved.get(above)?.voltage.get::<volt>();
+        Some((beginning, libm::fabs(solved.get(place)?.current.get::<ampere>())))
     }
 
     /// What each circuit of a solved tree carries and where its ends stand, behind what is already in `states`.
-    pub fn states(&self, tree: &Tree, solved: &[NodeState], emf: f64, states: &mut Vec<State>) {
+    /// `collapsed`: no voltage carries the network, and the solution stands in with constant currents.
+    pub fn states(
+        &self,
+        tree: &Tree,
+        (solved, collapsed): (&[NodeState], bool),
+        emf: f64,
+        states: &mut Vec<State>,
+    ) {
         let site = self.site;
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
         let starts = starts(self, tree, solved);
+        let mut branches = Branches::default();
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate() {
             let (Some(circuit), Some(state)) = (node.circuit, solved.get(index)) else { continue };
@@ -212,11 +239,51 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 drop_before: (emf - above).clamp(0.0, emf),
                 ohms_before,
                 start: starts.get(index).copied().flatten(),
-                started: self.started(tree, index, emf),
+                started: self.started(tree, &mut branches, index, (emf, collapsed)),
                 before: tree.nodes.get(node.parent).and_then(|p| p.circuit),
                 end: node.item,
             });
         }
+    }
+}
+
+/// Each branch of a tree by itself, behind a root of its own: made where the first load starts.
+#[derive(Default)]
+struct Branches {
+    all: Vec<Vec<TreeNode>>,
+    /// For each node of the tree its branch and its place there.
+    places: Vec<(usize, usize)>,
+}
+
+impl Branches {
+    fn of<F: Fn(usize) -> f64>(
+        &mut self,
+        solver: &Solver<'_, F>,
+        tree: &Tree,
+        index: usize,
+    ) -> Option<(&mut Vec<TreeNode>, usize)> {
+        if self.places.is_empty() {
+            for (index, node) in solver.nodes(tree, None).into_iter().enumerate() {
+                let (branch, parent) = match (index, node.parent) {
+                    // The root has no branch.
+                    (0, _) => (usize::MAX, 0),
+                    (_, 0) => {
+                        let root = TreeNode { parent: 0, load: NodeLoad::default(), ..node };
+                        let root = TreeNode { resistance: ElectricalResistance::default(), ..root };
+                        self.all.push(vec![root]);
+                        (self.all.len() - 1, 0)
+                    }
+                    (_, parent) => self.places.get(parent).copied()?,
+                };
+                let place = self.all.get_mut(branch).map_or(0, |nodes| {
+                    nodes.push(TreeNode { parent, ..node });
+                    nodes.len() - 1
+                });
+                self.places.push((branch, place));
+            }
+        }
+        let (branch, place) = self.places.get(index).copied()?;
+        Some((self.all.get_mut(branch)?, place))
     }
 }
 
