@@ -16,9 +16,9 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::bank;
 use super::fault::Fault;
-use super::flow::{Flow, Flows, Loops, Network};
+use super::flow::{Flow, Flows, Loops, Network, Relief};
 use super::graph::{Item, Tree};
-use super::grow::{add_far_devices, enlarge, relieve_collapse, restart_leaves};
+use super::grow::{add_far_devices, can_grow, enlarge, relieve_collapse, restart_leaves};
 use super::model::{CircuitEntry, LoadEntry, Return};
 use super::offers::{Offers, complete, joints};
 use super::read::{Problem, Problems};
@@ -178,21 +178,25 @@ fn plan_by(site: &Site, alone: usize) -> Result<Plan, Problems> {
     planned.resize_with(site.circuits.len(), || None);
     let fixed = (trees.as_slice(), feeding.as_slice(), &offers);
     let mut loops = Loops::default();
-    let mut flows_of = |drafts: &[Draft], temperatures: &[Option<f64>]| {
+    let mut flows_of = |drafts: &[Draft], temperatures: &[Option<f64>], relieve: bool, at_once: bool| {
         let wired = drafts.iter().map(|d| (d.positive, d.negative, d.joints));
         loops.update(site, wired.zip(temperatures.iter().copied()));
-        Flows::new(site, &network, &trees, &loops)
+        let can = |path: &[usize]| relieve && path.iter().any(|&c| can_grow(drafts, c));
+        Flows::new(site, &network, &trees, &loops, &Relief { can: &can, at_once })
     };
     // Passes since all was last begun anew.
     let mut passes = 0;
+    // Passes that only relieved what collapsed.
+    let mut reliefs = 0;
     for _ in 0..=most {
-        let flows = flows_of(&drafts, &temperatures);
-        judge_all(site, fixed, (&drafts, &far_devices), &flows, &mut planned, |_, _| {})
-            .map_err(|problem| Problems(vec![problem], 0))?;
+        let flows = flows_of(&drafts, &temperatures, true, reliefs > alone);
         if relieve_collapse(&flows, &mut drafts) {
+            reliefs += 1;
             settled = false;
             continue;
         }
+        judge_all(site, fixed, (&drafts, &far_devices), &flows, &mut planned, |_, _| {})
+            .map_err(|problem| Problems(vec![problem], 0))?;
         for ((draft, circuit), done) in drafts.iter_mut().zip(&site.circuits).zip(&planned) {
             draft.joints = joints(site, circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
         }
@@ -220,7 +224,7 @@ fn plan_by(site: &Site, alone: usize) -> Result<Plan, Problems> {
             };
             let mut trials = Trials::new(candidates, &planned, &flows, site.banks.len() == 1);
             while let Some(round) = trials.next(&mut drafts) {
-                let tried = flows_of(&drafts, &temperatures);
+                let tried = flows_of(&drafts, &temperatures, false, false);
                 let mut before = Vec::new();
                 let judged =
                     judge_all(site, fixed, (&drafts, &far_devices), &tried, &mut planned, |circuit, done| {

@@ -60,8 +60,7 @@ impl<'a> Neighbours<'a> {
     fn against(&self, drafts: &[Draft], circuit: usize, conductor: &Conductor) -> Option<Reason> {
         let planned = self.planned.get(circuit)?.as_ref()?;
         let Draft { offered, joints, .. } = *drafts.get(circuit)?;
-        let draft =
-            Draft { positive: *conductor, negative: *conductor, offered, sizes: Vec::new(), joints };
+        let draft = Draft { positive: *conductor, negative: *conductor, offered, sizes: Vec::new(), joints };
         let stated = self.site.circuits.get(circuit)?;
         let bare = match judge(&planned.run, conductor, conductor, None) {
             Ok(bare) => bare,

@@ -113,6 +113,25 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         self.run(tree, emf, None)
     }
 
+    /// The nodes at which branches collapse, each solved by itself: the source holds its terminals.
+    pub fn collapses(&self, tree: &Tree, emf: ElectricPotential) -> Vec<usize> {
+        let mut branches = Branches::default();
+        branches.fill(self, tree);
+        let collapsed: Vec<Option<usize>> = branches
+            .all
+            .iter()
+            .map(|branch| match run(branch, emf) {
+                Err(Error::Collapse { node, .. }) => Some(node),
+                _ => None,
+            })
+            .collect();
+        let places = branches.places.iter().enumerate();
+        places
+            .filter(|(_, (branch, place))| collapsed.get(*branch).is_some_and(|at| *at == Some(*place)))
+            .map(|(node, _)| node)
+            .collect()
+    }
+
     /// With constant powers as constant currents: always has a solution, and stands in where there is none.
     pub fn linear(&self, tree: &Tree, emf: ElectricPotential) -> Vec<NodeState> {
         self.run(tree, emf, Some(emf)).unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
@@ -256,12 +275,7 @@ struct Branches {
 }
 
 impl Branches {
-    fn of<F: Fn(usize) -> f64>(
-        &mut self,
-        solver: &Solver<'_, F>,
-        tree: &Tree,
-        index: usize,
-    ) -> Option<(&mut Vec<TreeNode>, usize)> {
+    fn fill<F: Fn(usize) -> f64>(&mut self, solver: &Solver<'_, F>, tree: &Tree) {
         if self.places.is_empty() {
             for (index, node) in solver.nodes(tree, None).into_iter().enumerate() {
                 let (branch, parent) = match (index, node.parent) {
@@ -273,7 +287,7 @@ impl Branches {
                         self.all.push(vec![root]);
                         (self.all.len() - 1, 0)
                     }
-                    (_, parent) => self.places.get(parent).copied()?,
+                    (_, parent) => self.places.get(parent).copied().unwrap_or((usize::MAX, 0)),
                 };
                 let place = self.all.get_mut(branch).map_or(0, |nodes| {
                     nodes.push(TreeNode { parent, ..node });
@@ -282,6 +296,15 @@ impl Branches {
                 self.places.push((branch, place));
             }
         }
+    }
+
+    fn of<F: Fn(usize) -> f64>(
+        &mut self,
+        solver: &Solver<'_, F>,
+        tree: &Tree,
+        index: usize,
+    ) -> Option<(&mut Vec<TreeNode>, usize)> {
+        self.fill(solver, tree);
         let (branch, place) = self.places.get(index).copied()?;
         Some((self.all.get_mut(branch)?, place))
     }

@@ -41,8 +41,7 @@ impl Trials {
     pub fn new(candidates: Vec<usize>, planned: &[Option<Planned>], flows: &Flows, apart: bool) -> Self {
         // An obstacle that stands already may be the answer to a trial elsewhere: then each is tried for itself.
         let apart = apart && obstacles(planned).next().is_none() && failures(planned) == 0;
-        let branch: Vec<usize> =
-            if apart { flows.branches() } else { planned.iter().map(|_| 0).collect() };
+        let branch: Vec<usize> = if apart { flows.branches() } else { planned.iter().map(|_| 0).collect() };
         let count = branch.iter().max().map_or(1, |most| most + 1);
         let mut open: Vec<Vec<Vec<usize>>> = vec![Vec::new(); count];
         for circuit in candidates {
