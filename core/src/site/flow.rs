@@ -74,6 +74,14 @@ pub(super) struct Flow {
     pub limit: Option<f64>,
 }
 
+/// What is done about a network that collapses.
+pub(super) struct Relief<'a> {
+    /// Whether something on a path that collapses can grow: then the rest need not be known.
+    pub can: &'a dyn Fn(&[usize]) -> bool,
+    /// Branches know nothing of each other: all are relieved at once, if each can be; else the first.
+    pub at_once: bool,
+}
+
 /// Conductors, positive and negative, and joints of a circuit.
 pub(super) type Wired = (Conductor, Conductor, ElectricalResistance);
 
@@ -81,8 +89,10 @@ pub(super) type Wired = (Conductor, Conductor, ElectricalResistance);
 pub(super) struct Flows {
     /// In the order of the document.
     pub circuits: Vec<Flow>,
-    /// The first collapse met: the circuits from the source to it, and the error.
-    pub collapse: Option<(Vec<usize>, Error)>,
+    /// The first collapse met: the circuits from the source to it.
+    pub collapse: Option<Vec<usize>>,
+    /// Where that is to be relieved, the paths to those that collapse beside it; nothing else is filled in then.
+    pub also: Vec<Vec<usize>>,
     /// Circuits where the network collapsed.
     pub collapsed: Vec<usize>,
     /// For each circuit the one before it on the way from its source.
@@ -104,13 +114,41 @@ impl Flows {
 }
 
 impl Flows {
-    pub fn new(site: &Site, network: &Network, trees: &[Tree], loops: &Loops) -> Self {
+    /// For each circuit the number of the branch it lies on: all that hangs on one circuit at a source.
+    pub fn branches(&self) -> Vec<usize> {
+        let mut branches: Vec<Option<usize>> = vec![None; self.before.len()];
+        let mut count = 0;
+        for circuit in 0..self.before.len() {
+            // Up to what is known or stands first, then down again.
+            let mut path = vec![circuit];
+            let mut known = branches.get(circuit).copied().flatten();
+            let mut here = circuit;
+            while let (None, Some(before)) = (known, self.before.get(here).copied().flatten()) {
+                here = before;
+                known = branches.get(here).copied().flatten();
+                path.push(here);
+            }
+            let branch = known.unwrap_or_else(|| {
+                count += 1;
+                count - 1
+            });
+            for circuit in path {
+                if let Some(slot) = branches.get_mut(circuit) {
+                    *slot = Some(branch);
+                }
+            }
+        }
+        branches.into_iter().map(|b| b.unwrap_or(0)).collect()
+    }
+
+    pub fn new(site: &Site, network: &Network, trees: &[Tree], loops: &Loops, relief: &Relief<'_>) -> Self {
         let graph = &network.graph;
         let banks = sources(site);
         let ohms = |index: usize| loops.now(index);
         let mut flows = Self {
             circuits: vec![none(); site.circuits.len()],
             collapse: None,
+            also: Vec::new(),
             collapsed: Vec::new(),
             before: vec![None; site.circuits.len()],
         };
@@ -129,7 +167,9 @@ impl Flows {
             flows.take_faults(tree, &banks, loops);
         }
         let drawn = graph.drawn_by_links();
-        let mut volts = flows.take_states(site, network, (&drawn, &drawn), &ohms);
+        let Some(mut volts) = flows.take_states(site, network, (&drawn, &drawn), &ohms, relief) else {
+            return flows;
+        };
         // A stated current above what the loads draw flows to the circuit's end, through all before it; at the highest
         // voltage it is left out, since it would take volts, and so current, from resistive loads.
         let mut at_low = drawn.clone();
@@ -145,7 +185,10 @@ impl Flows {
             above_loads |= stated > low;
         }
         if above_loads {
-            volts = flows.take_states(site, network, (&at_low, &drawn), &ohms);
+            match flows.take_states(site, network, (&at_low, &drawn), &ohms, relief) {
+                Some(again) => volts = again,
+                None => return flows,
+            }
         }
         flows.take_links(site, graph, trees, &volts);
         // Stated currents and the user's own diversity.
@@ -233,13 +276,13 @@ impl Flows {
         }
     }
 
-    fn note_collapse(&mut self, tree: &Tree, error: Error) {
+    fn note_collapse(&mut self, tree: &Tree, error: &Error) {
         let node = match error {
-            Error::Collapse { node, .. } => node,
+            Error::Collapse { node, .. } => *node,
             _ => 0,
         };
         if self.collapse.is_none() {
-            self.collapse = Some((path_to(tree, node), error));
+            self.collapse = Some(path_to(tree, node));
         }
         if let Some(circuit) = tree.nodes.get(node).and_then(|n| n.circuit) {
             self.collapsed.push(circuit);
@@ -248,14 +291,16 @@ impl Flows {
 
     /// Solves every island with each of its banks alone, at cut-off and at its highest voltage, and takes for each
     /// circuit the greatest current, and the voltages of the state in which its end stands lowest. Returns the
-    /// voltages at the items with the first bank of their island.
+    /// voltages at the items with the first bank of their island, where there are links; `None` where the network
+    /// collapses and can be relieved.
     fn take_states(
         &mut self,
         site: &Site,
         network: &Network,
         (at_low, at_high): (&BTreeMap<Item, f64>, &BTreeMap<Item, f64>),
         ohms: &impl Fn(usize) -> f64,
-    ) -> BTreeMap<Item, f64> {
+        relief: &Relief<'_>,
+    ) -> Option<BTreeMap<Item, f64>> {
         let mut volts = BTreeMap::new();
         let mut low: Vec<State> = Vec::with_capacity(site.circuits.len());
         let mut high = Vec::new();
@@ -267,11 +312,23 @@ impl Flows {
                 let Some(bank) = site.banks.get(*bank) else { continue };
                 let solver = Solver { site, drawn: at_low, nominal: island.nominal, ohms, off };
                 let solver_high = Solver { drawn: at_high, ..solver };
-                let solved = solver.solve(tree, bank.cut_off).unwrap_or_else(|error| {
+                let solution = solver.solve(tree, bank.cut_off);
+                let collapsed = solution.is_err();
+                if let Err(error) = &solution {
                     self.note_collapse(tree, error);
-                    solver.linear(tree, bank.cut_off)
-                });
-                solver.states(tree, &solved, bank.cut_off.get::<volt>(), &mut low);
+                    if self.collapse.as_ref().is_some_and(|path| (relief.can)(path)) {
+                        if relief.at_once {
+                            let nodes = solver.collapses(tree, bank.cut_off).into_iter();
+                            let all: Vec<Vec<usize>> = nodes.map(|node| path_to(tree, node)).collect();
+                            if all.iter().all(|path| (relief.can)(path)) {
+                                self.also = all;
+                            }
+                        }
+                        return None;
+                    }
+                }
+                let solved = solution.unwrap_or_else(|_| solver.linear(tree, bank.cut_off));
+                solver.states(tree, (&solved, collapsed), bank.cut_off.get::<volt>(), &mut low);
                 // Only links read them.
                 if !network.graph.links.is_empty() {
                     for (node, state) in tree.nodes.iter().zip(&solved) {
@@ -279,7 +336,7 @@ impl Flows {
                     }
                 }
                 if resistive && let Ok(solved) = solver_high.solve(tree, bank.highest) {
-                    solver_high.states(tree, &solved, bank.highest.get::<volt>(), &mut high);
+                    solver_high.states(tree, (&solved, false), bank.highest.get::<volt>(), &mut high);
                 }
             }
         }
@@ -294,7 +351,7 @@ impl Flows {
                 *before = lowest.before;
             }
         }
-        volts
+        Some(volts)
     }
 }
 

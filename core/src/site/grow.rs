@@ -162,18 +162,24 @@ fn cannot_serve(site: &Site, circuit: usize, planned: &Planned, check: &Checked)
     Problem { line, place: format!("[[circuit]] \"{name}\""), text }
 }
 
-/// Where the network collapses: enlarges the designed run of the greatest resistance on the path; `false` where nothing
-/// collapsed, or nothing on the path can grow.
+/// Where the network collapses: enlarges the designed run of the greatest resistance on the path, and the same on every
+/// other branch that collapses; `false` where nothing collapsed, or nothing on the path can grow.
 pub(super) fn relieve_collapse(flows: &Flows, drafts: &mut [Draft]) -> bool {
-    let Some((path, _)) = &flows.collapse else { return false };
-    let mut worst: Option<(usize, f64)> = None;
-    for &circuit in path {
-        let ohms = flows.circuits.get(circuit).map_or(0.0, |f| f.ohms);
-        if can_grow(drafts, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
-            worst = Some((circuit, ohms));
+    let Some(first) = &flows.collapse else { return false };
+    let mut relieve = |path: &[usize]| {
+        let mut worst: Option<(usize, f64)> = None;
+        for &circuit in path {
+            let ohms = flows.circuits.get(circuit).map_or(0.0, |f| f.ohms);
+            if can_grow(drafts, circuit) && worst.is_none_or(|(_, most)| ohms > most) {
+                worst = Some((circuit, ohms));
+            }
         }
+        worst.is_some_and(|(circuit, _)| grow(circuit, drafts))
+    };
+    if flows.also.is_empty() {
+        return relieve(first);
     }
-    worst.is_some_and(|(circuit, _)| grow(circuit, drafts))
+    flows.also.iter().fold(false, |grew, path| relieve(path) | grew)
 }
 
 /// Puts designed circuits that feed no board or bank back to the smallest size on offer.
@@ -189,7 +195,7 @@ pub(super) fn restart_leaves(trees: &[Tree], drafts: &mut [Draft]) {
 }
 
 /// Whether a circuit is designed and a larger size is on offer.
-fn can_grow(drafts: &[Draft], circuit: usize) -> bool {
+pub(super) fn can_grow(drafts: &[Draft], circuit: usize) -> bool {
     drafts.get(circuit).is_some_and(|d| d.offered.is_some_and(|o| o + 1 < d.sizes.len()))
 }
 

@@ -16,14 +16,15 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::bank;
 use super::fault::Fault;
-use super::flow::{Flow, Flows, Loops, Network};
+use super::flow::{Flow, Flows, Loops, Network, Relief};
 use super::graph::{Item, Tree};
-use super::grow::{add_far_devices, enlarge, relieve_collapse, restart_leaves};
+use super::grow::{add_far_devices, can_grow, enlarge, relieve_collapse, restart_leaves};
 use super::model::{CircuitEntry, LoadEntry, Return};
 use super::offers::{Offers, complete, joints};
 use super::read::{Problem, Problems};
 use super::smaller::{Neighbours, explain};
 use super::system::Site;
+use super::trials::Trials;
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Demand, Judgement, Outcome, Run, judge};
 use crate::device::Supply;
@@ -133,18 +134,21 @@ pub(super) struct Draft {
     pub joints: ElectricalResistance,
 }
 
-/// Passes in which one shared run alone grows, until temperatures have found themselves; then one for each part of the
-/// network that has nothing in common with the others.
-const ALONE: usize = 6;
+/// Passes that temperatures take to find themselves.
+const FIND_TEMPERATURES: usize = 6;
+/// Passes times circuits in which one shared run alone grows, in the order of the document; in a site larger than that,
+/// parts of the network that have nothing in common then grow at once.
+const ONE_BY_ONE: usize = 50_000;
 
 /// Makes the plan.
 pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
+    let alone = ONE_BY_ONE.checked_div(site.circuits.len()).unwrap_or(0).max(FIND_TEMPERATURES);
     // What is refused is told as it stands where one run alone grows at a time.
-    planned(site, ALONE).or_else(|_| planned(site, usize::MAX))
+    plan_by(site, alone).or_else(|_| plan_by(site, usize::MAX))
 }
 
 /// Makes the plan; after so many passes parts that have nothing in common grow at once.
-fn planned(site: &Site, alone: usize) -> Result<Plan, Problems> {
+fn plan_by(site: &Site, alone: usize) -> Result<Plan, Problems> {
     let network = Network::new(site);
     let trees = network.graph.trees();
     let offers = Offers::new(site);
@@ -174,21 +178,25 @@ fn planned(site: &Site, alone: usize) -> Result<Plan, Problems> {
     planned.resize_with(site.circuits.len(), || None);
     let fixed = (trees.as_slice(), feeding.as_slice(), &offers);
     let mut loops = Loops::default();
-    let mut flows_of = |drafts: &[Draft], temperatures: &[Option<f64>]| {
+    let mut flows_of = |drafts: &[Draft], temperatures: &[Option<f64>], relieve: bool, at_once: bool| {
         let wired = drafts.iter().map(|d| (d.positive, d.negative, d.joints));
         loops.update(site, wired.zip(temperatures.iter().copied()));
-        Flows::new(site, &network, &trees, &loops)
+        let can = |path: &[usize]| relieve && path.iter().any(|&c| can_grow(drafts, c));
+        Flows::new(site, &network, &trees, &loops, &Relief { can: &can, at_once })
     };
     // Passes since all was last begun anew.
     let mut passes = 0;
+    // Passes that only relieved what collapsed.
+    let mut reliefs = 0;
     for _ in 0..=most {
-        let flows = flows_of(&drafts, &temperatures);
-        judge_all(site, fixed, (&drafts, &far_devices), &flows, &mut planned, |_, _| {})
-            .map_err(|problem| Problems(vec![problem], 0))?;
+        let flows = flows_of(&drafts, &temperatures, true, reliefs > alone);
         if relieve_collapse(&flows, &mut drafts) {
+            reliefs += 1;
             settled = false;
             continue;
         }
+        judge_all(site, fixed, (&drafts, &far_devices), &flows, &mut planned, |_, _| {})
+            .map_err(|problem| Problems(vec![problem], 0))?;
         for ((draft, circuit), done) in drafts.iter_mut().zip(&site.circuits).zip(&planned) {
             draft.joints = joints(site, circuit, done.as_ref().map_or(&[], |p| p.fitted.as_slice()));
         }
@@ -214,51 +222,28 @@ fn planned(site: &Site, alone: usize) -> Result<Plan, Problems> {
                 let own = Neighbours::new(site, &offers, &planned, &flows);
                 (0..drafts.len()).filter(|&c| own.spare(&drafts, c)).collect()
             };
-            let fewest = failures(&planned);
-            // What fits together fits one by one; where it does not, either half is tried alone.
-            let mut groups = vec![candidates];
-            while let Some(mut group) = groups.pop() {
-                let kept: Vec<(usize, Draft)> = group
-                    .iter()
-                    .filter_map(|&c| {
-                        let draft = drafts.get_mut(c)?;
-                        let thinner = draft.thinner()?;
-                        Some((c, core::mem::replace(draft, thinner)))
-                    })
-                    .collect();
-                if kept.is_empty() {
-                    continue;
-                }
-                let tried = flows_of(&drafts, &temperatures);
+            let mut trials = Trials::new(candidates, &planned, &flows, site.banks.len() == 1);
+            while let Some(round) = trials.next(&mut drafts) {
+                let tried = flows_of(&drafts, &temperatures, false, false);
                 let mut before = Vec::new();
                 let judged =
                     judge_all(site, fixed, (&drafts, &far_devices), &tried, &mut planned, |circuit, done| {
                         before.push((circuit, done));
                     });
-                if judged.is_ok() && tried.collapse.is_none() && failures(&planned) <= fewest {
-                    settled = false;
-                    continue;
-                }
-                if let [circuit] = *group.as_slice() {
+                let fits = judged.is_ok() && tried.collapse.is_none();
+                let single = round.is_single();
+                let kept = trials.conclude(round, fits, &planned, &mut drafts, &mut tried_out);
+                settled &= !kept;
+                if single && !kept {
                     judged.map_err(|problem| Problems(vec![problem], 0))?;
-                    if let Some(slot) = tried_out.get_mut(circuit) {
-                        *slot = first_obstacle(&planned, circuit);
-                    }
                 }
-                for (circuit, draft) in kept {
-                    if let Some(slot) = drafts.get_mut(circuit) {
-                        *slot = draft;
-                    }
-                }
+                // What is not kept is judged as it was before.
                 for (circuit, done) in before {
-                    if let Some(slot) = planned.get_mut(circuit) {
+                    if !trials.keeps(circuit)
+                        && let Some(slot) = planned.get_mut(circuit)
+                    {
                         *slot = done;
                     }
-                }
-                if group.len() > 1 {
-                    let later = group.split_off(group.len() / 2);
-                    groups.push(later);
-                    groups.push(group);
                 }
             }
         } else {
@@ -289,26 +274,11 @@ impl Draft {
     }
 
     /// The same one size smaller.
-    fn thinner(&self) -> Option<Self> {
+    pub fn thinner(&self) -> Option<Self> {
         let place = self.offered?.checked_sub(1)?;
         let mut thinner = self.clone();
         thinner.take(place).then_some(thinner)
     }
-}
-
-/// The first check that speaks against a plan, a given circuit's own before those of others.
-fn first_obstacle(planned: &[Option<Planned>], circuit: usize) -> Option<Reason> {
-    let of = |p: &Planned| p.judgement.checks.iter().find(|c| c.is_obstacle()).copied();
-    if let Some(check) = planned.get(circuit)?.as_ref().and_then(of) {
-        return Some(Reason::Check(check));
-    }
-    planned.iter().enumerate().find_map(|(other, p)| Some(Reason::Path(of(p.as_ref()?)?, other)))
-}
-
-/// Failed checks of a plan.
-fn failures(planned: &[Option<Planned>]) -> usize {
-    let failed = |j: &Judgement| j.checks.iter().filter(|c| c.outcome == Outcome::Failed).count();
-    planned.iter().flatten().map(|p| failed(&p.judgement) + p.further.iter().map(failed).sum::<usize>()).sum()
 }
 
 /// Ends of each circuit that can feed, in the circuit's own direction.

@@ -1,7 +1,9 @@
 //! What boards, consumers and banks are inspected for (R3, R8, R11, R19).
 
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::ToString;
+use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
@@ -25,34 +27,40 @@ const EXTRA_LOW_V: f64 = 120.0;
 /// Most lugs on one stud (R8).
 const LUGS: u32 = 4;
 
-/// What a busbar must carry, A, and what of: all that its sources let pass, or all that its loads draw (R7, R8).
-pub(super) fn busbar_need(site: &Site, plan: &Plan, board: &Board) -> (f64, &'static str) {
-    let (mut fed, mut drawn) = (0.0, 0.0);
+/// What each busbar must carry, A, and what of: all that its sources let pass, or all that its loads draw (R7, R8); in the
+/// order of the boards.
+pub(super) fn busbar_needs(site: &Site, plan: &Plan) -> Vec<(f64, &'static str)> {
+    // What feeds each board and what it feeds, by its name.
+    let mut sums: BTreeMap<&str, (f64, f64)> =
+        site.boards.iter().map(|board| (board.name.as_str(), (0.0, 0.0))).collect();
+    let chargers: BTreeSet<&str> = site.chargers.iter().map(|c| c.name.as_str()).collect();
     for (circuit, planned) in site.circuits.iter().zip(&plan.circuits) {
         let Some(planned) = planned else { continue };
-        if circuit.from != board.name && circuit.to != board.name {
-            continue;
-        }
-        let towards = if circuit.to == board.name { planned.feeds.from } else { planned.feeds.to };
         let current = planned.judgement.current.get::<ampere>();
-        let other = if circuit.to == board.name { &circuit.from } else { &circuit.to };
-        // A charger limits itself: no device stands for it.
-        if site.chargers.iter().any(|c| c.name == *other) {
-            fed += current;
-        } else if towards {
-            fed += planned.fitted.first().map_or(current, |f| f.guard.device.rating.get::<ampere>());
-        } else {
-            drawn += current;
+        let (from, to) = (circuit.from.as_str(), circuit.to.as_str());
+        for (own, other, towards) in [(to, from, planned.feeds.from), (from, to, planned.feeds.to)] {
+            let Some((fed, drawn)) = sums.get_mut(own) else { continue };
+            // A charger limits itself: no device stands for it.
+            if chargers.contains(other) {
+                *fed += current;
+            } else if towards {
+                *fed += planned.fitted.first().map_or(current, |f| f.guard.device.rating.get::<ampere>());
+            } else {
+                *drawn += current;
+            }
         }
     }
-    if fed >= drawn { (fed, "the devices and sources that feed it") } else { (drawn, "its loads") }
+    let need = |board: &Board| {
+        let (fed, drawn) = sums.get(board.name.as_str()).copied().unwrap_or((0.0, 0.0));
+        if fed >= drawn { (fed, "the devices and sources that feed it") } else { (drawn, "its loads") }
+    };
+    site.boards.iter().map(need).collect()
 }
 
 /// Busbars and studs (R8).
 pub(super) fn boards(site: &Site, plan: &Plan, found: &mut Findings) {
-    for board in &site.boards {
+    for (board, (need, what)) in site.boards.iter().zip(busbar_needs(site, plan)) {
         let place = format!("board \"{}\"", board.name);
-        let (need, what) = busbar_need(site, plan, board);
         match board.busbar.map(|b| b.get::<ampere>()) {
             None if board.designed => {
                 found.pass("R8", &place, &format!("busbar to be bought for at least {} A", digits(need)));

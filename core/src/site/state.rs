@@ -113,6 +113,25 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         self.run(tree, emf, None)
     }
 
+    /// The nodes at which branches collapse, each solved by itself: the source holds its terminals.
+    pub fn collapses(&self, tree: &Tree, emf: ElectricPotential) -> Vec<usize> {
+        let mut branches = Branches::default();
+        branches.fill(self, tree);
+        let collapsed: Vec<Option<usize>> = branches
+            .all
+            .iter()
+            .map(|branch| match run(branch, emf) {
+                Err(Error::Collapse { node, .. }) => Some(node),
+                _ => None,
+            })
+            .collect();
+        let places = branches.places.iter().enumerate();
+        places
+            .filter(|(_, (branch, place))| collapsed.get(*branch).is_some_and(|at| *at == Some(*place)))
+            .map(|(node, _)| node)
+            .collect()
+    }
+
     /// With constant powers as constant currents: always has a solution, and stands in where there is none.
     pub fn linear(&self, tree: &Tree, emf: ElectricPotential) -> Vec<NodeState> {
         self.run(tree, emf, Some(emf)).unwrap_or_else(|_| vec![NodeState::default(); tree.nodes.len()])
@@ -155,7 +174,15 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
 
     /// The network once more while one node's own load starts (R3: solved): one of a kind draws its start current, an
     /// inverter its surge.
-    fn started(&self, tree: &Tree, index: usize, emf: f64) -> Option<(f64, f64)> {
+    ///
+    /// The source holds its terminals: of a network that does not collapse only the branch of that node matters.
+    fn started(
+        &self,
+        tree: &Tree,
+        branches: &mut Branches,
+        index: usize,
+        (emf, collapsed): (f64, bool),
+    ) -> Option<(f64, f64)> {
         let node = tree.nodes.get(index)?;
         if self.is_off(node.item) {
             return None;
@@ -180,20 +207,40 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
             load.current += ElectricCurrent::new::<ampere>(amps);
         }
         // Only now: most nodes start nothing.
-        let mut nodes = self.nodes(tree, None);
-        nodes.get_mut(index)?.load = load;
-        let Ok(solved) = run(&nodes, ElectricPotential::new::<volt>(emf)) else { return Some((0.0, 0.0)) };
-        let beginning = solved.get(node.parent)?.voltage.get::<volt>();
-        Some((beginning, libm::fabs(solved.get(index)?.current.get::<ampere>())))
+        let mut whole;
+        let (branch, place) = if collapsed {
+            // Another branch may be what collapses, and this start what relieves it.
+            whole = self.nodes(tree, None);
+            (&mut whole, index)
+        } else {
+            branches.of(self, tree, index)?
+        };
+        let starting = branch.get_mut(place)?;
+        let running = core::mem::replace(&mut starting.load, load);
+        let above = starting.parent;
+        let solved = run(branch, ElectricPotential::new::<volt>(emf));
+        branch.get_mut(place)?.load = running;
+        let Ok(solved) = solved else { return Some((0.0, 0.0)) };
+        let beginning = solved.get(above)?.voltage.get::<volt>();
+        Some((beginning, libm::fabs(solved.get(place)?.current.get::<ampere>())))
     }
 
     /// What each circuit of a solved tree carries and where its ends stand, behind what is already in `states`.
-    pub fn states(&self, tree: &Tree, solved: &[NodeState], emf: f64, states: &mut Vec<State>) {
+    /// `collapsed`: no voltage carries the network, and the solution stands in with constant currents.
+    pub fn states(
+        &self,
+        tree: &Tree,
+        (solved, collapsed): (&[NodeState], bool),
+        emf: f64,
+        states: &mut Vec<State>,
+    ) {
         let site = self.site;
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
-        let started: Vec<Option<(f64, f64)>> =
-            (0..tree.nodes.len()).map(|index| self.started(tree, index, emf)).collect();
+        let mut branches = Branches::default();
+        let started: Vec<Option<(f64, f64)>> = (0..tree.nodes.len())
+            .map(|index| self.started(tree, &mut branches, index, (emf, collapsed)))
+            .collect();
         let starts = starts(self, tree, solved, &started);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate() {
@@ -219,6 +266,50 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 end: node.item,
             });
         }
+    }
+}
+
+/// Each branch of a tree by itself, behind a root of its own: made where the first load starts.
+#[derive(Default)]
+struct Branches {
+    all: Vec<Vec<TreeNode>>,
+    /// For each node of the tree its branch and its place there.
+    places: Vec<(usize, usize)>,
+}
+
+impl Branches {
+    fn fill<F: Fn(usize) -> f64>(&mut self, solver: &Solver<'_, F>, tree: &Tree) {
+        if self.places.is_empty() {
+            for (index, node) in solver.nodes(tree, None).into_iter().enumerate() {
+                let (branch, parent) = match (index, node.parent) {
+                    // The root has no branch.
+                    (0, _) => (usize::MAX, 0),
+                    (_, 0) => {
+                        let root = TreeNode { parent: 0, load: NodeLoad::default(), ..node };
+                        let root = TreeNode { resistance: ElectricalResistance::default(), ..root };
+                        self.all.push(vec![root]);
+                        (self.all.len() - 1, 0)
+                    }
+                    (_, parent) => self.places.get(parent).copied().unwrap_or((usize::MAX, 0)),
+                };
+                let place = self.all.get_mut(branch).map_or(0, |nodes| {
+                    nodes.push(TreeNode { parent, ..node });
+                    nodes.len() - 1
+                });
+                self.places.push((branch, place));
+            }
+        }
+    }
+
+    fn of<F: Fn(usize) -> f64>(
+        &mut self,
+        solver: &Solver<'_, F>,
+        tree: &Tree,
+        index: usize,
+    ) -> Option<(&mut Vec<TreeNode>, usize)> {
+        self.fill(solver, tree);
+        let (branch, place) = self.places.get(index).copied()?;
+        Some((self.all.get_mut(branch)?, place))
     }
 }
 

@@ -9,7 +9,7 @@ use uom::si::power::watt;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::finding::{Findings, Severity, digits};
-use super::flow::{Flows, Loops, Network};
+use super::flow::{Flows, Loops, Network, Relief};
 use super::model::{CircuitEntry, Return};
 use super::plan::{Fitted, Plan, Planned};
 use super::system::Site;
@@ -117,7 +117,8 @@ pub(super) fn diversity(site: &Site, plan: &Plan, found: &mut Findings) {
     });
     let mut loops = Loops::default();
     loops.update(&together, wired);
-    let flows = Flows::new(&together, &Network::new(&together), &plan.trees, &loops);
+    let relief = Relief { can: &|_| false, at_once: false };
+    let flows = Flows::new(&together, &Network::new(&together), &plan.trees, &loops, &relief);
     for ((circuit, planned), flow) in site.circuits.iter().zip(&plan.circuits).zip(&flows.circuits) {
         let Some(planned) = planned.as_ref().filter(|_| circuit.diversity < 1.0) else { continue };
         let rating = |f: &Fitted| f.guard.device.rating.get::<ampere>();

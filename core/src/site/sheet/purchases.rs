@@ -23,7 +23,7 @@ use crate::site::finding::digits;
 use crate::site::model::{CircuitEntry, Return, StockDevice};
 use crate::site::parts::{ControllerKind, ControllerPart};
 use crate::site::plan::{Plan, Planned};
-use crate::site::plant::busbar_need;
+use crate::site::plant::busbar_needs;
 use crate::site::report::Report;
 use crate::site::system::{FeedKind, Site};
 use crate::site::text::{conductor_words, device_words};
@@ -69,7 +69,11 @@ impl Report {
 
 /// The list as it grows: like things together.
 #[derive(Default)]
-struct Basket(Vec<Purchase>);
+struct Basket {
+    list: Vec<Purchase>,
+    /// Place in the list of each thing in its unit.
+    places: BTreeMap<String, Vec<(&'static str, usize)>>,
+}
 
 impl Basket {
     fn add(
@@ -81,7 +85,8 @@ impl Basket {
         shelf: Option<f64>,
     ) {
         let price = each.map(|p| p * amount);
-        if let Some(line) = self.0.iter_mut().find(|p| p.what == what && p.unit == unit) {
+        let known = self.places.get(&what).into_iter().flatten().find(|(known, _)| *known == unit);
+        if let Some(line) = known.and_then(|(_, place)| self.list.get_mut(*place)) {
             line.amount += amount;
             if !place.is_empty() && line.places.last().is_none_or(|last| last != place) {
                 line.places.push(place.to_string());
@@ -90,7 +95,8 @@ impl Basket {
             return;
         }
         let places = if place.is_empty() { Vec::new() } else { alloc::vec![place.to_string()] };
-        self.0.push(Purchase { amount, unit, what, places, price, shelf });
+        self.places.entry(what.clone()).or_default().push((unit, self.list.len()));
+        self.list.push(Purchase { amount, unit, what, places, price, shelf });
     }
 
     fn pieces(&mut self, count: u32, what: String, place: &str, each: Option<f64>, shelf: Option<u32>) {
@@ -111,16 +117,16 @@ pub(in crate::site) fn purchases(site: &Site, plan: &Plan) -> Vec<Purchase> {
     cables(site, plan, &mut basket);
     lugs(site, plan, &mut basket);
     devices(site, plan, &mut basket);
-    for board in site.boards.iter().filter(|b| b.designed) {
-        let need = busbar_need(site, plan, board).0;
+    let needs = busbar_needs(site, plan);
+    for (board, (need, _)) in site.boards.iter().zip(needs).filter(|(board, _)| board.designed) {
         let what = format!("busbar for at least {} A", digits(need));
         basket.pieces(2, what, &board.name, None, None);
     }
-    if !basket.0.is_empty() {
+    if !basket.list.is_empty() {
         let count = labels(site, plan).iter().map(|l| l.count).fold(0, u32::saturating_add);
         basket.pieces(count, "label, as listed".to_string(), "", None, None);
     }
-    basket.0
+    basket.list
 }
 
 /// A device and equal leads for every string of a designed bank of several (R15), and isolators of designed arrays (R20).
