@@ -193,6 +193,12 @@ fn rest() -> Vec<Pair> {
             controller("start_margin = none; ?"),
             ("start_margin = '1 V'", ""),
         ),
+        unmade(
+            ("R10", "array-not-checked"),
+            "whether a controller tracks is stated or not checked",
+            controller("kind = none; ?"),
+            ("kind = 'mppt'", ""),
+        ),
         Pair::of(
             Danger,
             ("R20", "isolator-not-load-break"),

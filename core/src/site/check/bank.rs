@@ -57,9 +57,24 @@ pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
         disconnects(site, bank, chemistry, part, demand, &mut at);
         limits(bank, part, &mut at);
         ventilation(bank, chemistry, part, &mut at);
-        let drawn = drawn(site, plan, &bank.name);
-        sharing(bank, part, drawn, &mut at);
+        let carried = carried(site, plan, &bank.name);
+        sharing(bank, part, carried, &mut at);
     }
+}
+
+/// Greatest current through a bank: what is drawn from it, or what its sources drive into it.
+pub(in crate::site) fn carried(site: &Site, plan: &Plan, name: &str) -> ElectricCurrent {
+    let charge: ElectricCurrent = site
+        .circuits
+        .iter()
+        .zip(&plan.circuits)
+        .filter(|(c, _)| c.from == name || c.to == name)
+        .filter_map(|(_, p)| p.as_ref())
+        .filter(|p| p.flow.charged)
+        .map(|p| p.judgement.current)
+        .sum();
+    let drawn = drawn(site, plan, name);
+    if charge > drawn { charge } else { drawn }
 }
 
 /// Greatest current out of a bank.
