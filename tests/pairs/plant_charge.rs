@@ -71,8 +71,8 @@ fn rates() -> Vec<Pair> {
         wrong(
             ("R11", "bank-without-charge"),
             "every bank is charged by something",
-            two_banks("reserve", "other").with_last("generator", "bank = none; board = '?'"),
-            ("other", "one"),
+            two_banks("reserve", "other").with_last("generator", "bank = none; board = none; ?"),
+            ("board = 'other'\nbank = 'reserve'", "board = 'one'\nbank = 'bank'"),
         ),
         Pair::of(
             NotChecked,
@@ -209,7 +209,7 @@ fn rates() -> Vec<Pair> {
         wrong(
             ("R10", "energy-short"),
             "as much comes in as is taken out",
-            charger("daily = '?'"),
+            charger("kind = 'hydro'; load_dump = true; output = '15 A'; daily = '?'"),
             ("142 Wh", "139 Wh"),
         ),
         // The same by 15 A at 12 V: 0.782 h.

@@ -53,10 +53,7 @@ fn branch(limit: &str) -> Document {
     converter(limit)
         .with_last("circuit", "size = '6 mm2'")
         .with_last("load", "route = none; board = none")
-        .add(
-            "circuit",
-            &format!("name = 'radio'; from = 'second'; to = 'radio'; one_way = '1 m'; {CLIPPED}"),
-        )
+        .add("circuit", &format!("name = 'radio'; from = 'second'; to = 'radio'; one_way = '1 m'; {CLIPPED}"))
         .add("circuit.device", &device("gG", "20 A"))
 }
 
@@ -64,10 +61,7 @@ fn branch(limit: &str) -> Document {
 fn charger(kind: &str, output: &str, at_the_bank: &str) -> Document {
     Document::plant("iec")
         .with("bank", "capacity = '300 Ah'; greatest_discharge = '100 A'")
-        .with(
-            "generator",
-            &format!("kind = '{kind}'; output = '{output}'; load_dump = true; route = none"),
-        )
+        .with("generator", &format!("kind = '{kind}'; output = '{output}'; load_dump = true; route = none"))
         .add("board", "name = 'main'; busbar = '100 A'")
         .add("circuit", "name = 'main'; from = 'bank'; to = 'main'; one_way = '1 m'")
         .add(
@@ -157,8 +151,10 @@ pub fn pairs() -> Vec<Pair> {
             NotChecked,
             ("R7", "source-limit-not-stated"),
             "an alternator that does not limit itself has a device at its own end too",
-            charger("alternator", "20 A", "to").add("circuit.device", &device("class T", "25 A")).with_last("circuit.device", "?"),
-            ("end = 'from'", ""),
+            charger("alternator", "20 A", "to")
+                .add("circuit.device", &device("class T", "25 A"))
+                .with_last("circuit.device", "?"),
+            ("end = 'from'", "end = 'to'"),
         ),
         // gG of 20 A open at 32 A only: of 28 A it sees nothing, and 2.5 mm² carry 27 A.
         Pair::of(
