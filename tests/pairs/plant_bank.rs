@@ -230,9 +230,16 @@ fn sharing() -> Vec<Pair> {
         // 15 A of charge, half of it in each of two.
         wrong(
             ("R15", "string-device-too-small"),
-            "the device of a string carries its share",
+            "the device of a string carries its share of the charge",
             strings("take_off = 'busbar'; string_device = '?'"),
             ("7.6 A", "7.4 A"),
+        ),
+        // 10.01 A of loads where the charger gives less.
+        wrong(
+            ("R15", "string-device-too-small"),
+            "the device of a string carries its share of what is drawn",
+            strings("take_off = 'busbar'; string_device = '?'").with("generator", "output = '8 A'"),
+            ("5.1 A", "4.9 A"),
         ),
     ]
 }
