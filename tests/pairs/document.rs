@@ -183,6 +183,14 @@ impl Document {
         self
     }
 
+    /// As [`Document::with`], of the last section of this name.
+    pub fn with_last(mut self, header: &str, keys: &str) -> Self {
+        self.0.reverse();
+        let mut changed = self.with(header, keys);
+        changed.0.reverse();
+        changed
+    }
+
     /// Takes out the sections of this name.
     pub fn without(mut self, header: &str) -> Self {
         self.0.retain(|(own, _)| *own != header);

@@ -47,8 +47,9 @@ const RULES: [&str; 21] = [
     "R1", "R2", "R3", "R4", "R5", "R6", "R7", "R8", "R9", "R10", "R11", "R12", "R13", "R14", "R15", "R16",
     "R17", "R18", "R19", "R20", "R21",
 ];
-/// Kinds of findings of the plant that have no pair, since no twin could pass beside the failing one: `plant_bank` tests them.
-const APART: [&str; 2] = ["disconnect-not-checked", "strings-share-unequally"];
+/// Kinds of findings of the plant that have no pair, since no twin could pass beside the failing one, or no file could be read:
+/// `plant_bank` and `plant_place` test them.
+const APART: [&str; 3] = ["disconnect-not-checked", "strings-share-unequally", "floating-but-bonded"];
 const GUIDE: &str = include_str!("../../core/guide/rules.md");
 
 fn pairs() -> Vec<Pair> {

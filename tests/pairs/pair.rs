@@ -132,6 +132,8 @@ fn not_made(slug: &str) -> &'static str {
         "charge-above-limit" | "charge-above-ceiling" | "charge-rate-low" => "charger-limit-not-stated",
         "charge-above-limit-in-cold" => "charge-limit-in-cold-not-stated",
         "set-point-low" | "set-point-high" | "highest-below-charging" => "set-points-not-stated",
+        "energy-short" => "energy-not-checked",
+        "bank-in-living-space" | "bank-in-engine-space" => "bank-space-not-stated",
         "compensation-missing" | "compensation-not-for-chemistry" => "compensation-not-stated",
         "load-dump" => "load-dump-not-stated",
         "bank-too-small" => "capacity-not-checked",

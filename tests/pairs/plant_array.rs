@@ -29,6 +29,19 @@ fn strings(keys: &str) -> Document {
         .with("array", keys)
 }
 
+/// A bank with a charger of its own, and an array beside it.
+fn beside(keys: &str) -> Document {
+    array(2, 1, keys).without("controller").add(
+        "generator",
+        "name = 'charger'; kind = 'shore'; output = '12 A'; absorption = '14.4 V'; float = '13.6 V'; \
+         compensation = '0 mV/K'; sense = 'bank'; route = '1 m'",
+    )
+}
+
+const REGULATOR: &str = "controller = 'regulator'\n\n[[controller]]\nname = 'regulator'\nkind = 'mppt'\n\
+    greatest_input = '150 V'\ninput_current = '40 A'\nstart_margin = '1 V'\noutput = '10 A'\nidle = '1 mW'\n\
+    absorption = '14.4 V'\nfloat = '13.6 V'\ncompensation = '0 mV/K'\nsense = 'bank'\nroute = '1 m'";
+
 /// A controller that joins array and bank.
 fn pwm(keys: &str, module: &str) -> Document {
     Document::array("iec", 1, 1)
@@ -180,18 +193,20 @@ fn rest() -> Vec<Pair> {
         unmade(
             ("R10", "array-without-controller"),
             "the controller of an array is named or not checked",
-            array(2, 1, "controller = none; ?").add(
-                "controller",
-                "name = 'spare'; kind = 'mppt'; output = '5 A'; absorption = '14.4 V'; compensation = '0 mV/K'; sense = 'bank'; idle = '1 mW'; \
-                 route = '1 m'",
-            ),
-            ("controller = 'regulator'", ""),
+            beside("controller = none; ?"),
+            (REGULATOR, ""),
         ),
         unmade(
             ("R10", "array-not-checked"),
             "the margin of a controller is stated or not checked",
             controller("start_margin = none; ?"),
             ("start_margin = '1 V'", ""),
+        ),
+        unmade(
+            ("R10", "array-not-checked"),
+            "whether a controller tracks is stated or not checked",
+            controller("kind = none; ?"),
+            ("kind = 'mppt'", ""),
         ),
         Pair::of(
             Danger,
@@ -218,7 +233,9 @@ fn rest() -> Vec<Pair> {
         unmade(
             ("R19", "monitoring-not-checked"),
             "what watches an array is stated or not checked",
-            array(3, 1, "route = '2 m'").with("controller", "output = '25 A'").with("site", "covered = true; ?"),
+            array(3, 1, "route = '2 m'")
+                .with("controller", "output = '25 A'")
+                .with("site", "covered = true; ?"),
             ("monitoring = 'insulation'", ""),
         ),
     ]

@@ -76,6 +76,20 @@ fn size_and_cold() -> Vec<Pair> {
             cold("temperature = ['?', '30 degC']"),
             ("-3 degC", "-5 degC"),
         ),
+        Pair::of(
+            NotChecked,
+            ("R12", "capacity-not-checked"),
+            "what a bank holds in a cold beyond the table is stated or not checked",
+            cold("temperature = ['-5 degC', '30 degC']; ?"),
+            ("cold_capacity = '70 %'", ""),
+        ),
+        // 58.1 Ah of 100 Ah.
+        wrong(
+            R12,
+            "the maker's figure for the cold takes the place of the table's",
+            cold("temperature = ['-5 degC', '30 degC']; cold_capacity = '?'"),
+            ("59 %", "57.5 %"),
+        ),
         // −20 °C; what it takes there is the pack's own word.
         wrong(
             ("R13", "temperature-beyond-discharge"),
@@ -216,9 +230,16 @@ fn sharing() -> Vec<Pair> {
         // 15 A of charge, half of it in each of two.
         wrong(
             ("R15", "string-device-too-small"),
-            "the device of a string carries its share",
+            "the device of a string carries its share of the charge",
             strings("take_off = 'busbar'; string_device = '?'"),
             ("7.6 A", "7.4 A"),
+        ),
+        // 10.01 A of loads where the charger gives less.
+        wrong(
+            ("R15", "string-device-too-small"),
+            "the device of a string carries its share of what is drawn",
+            strings("take_off = 'busbar'; string_device = '?'").with("generator", "output = '8 A'"),
+            ("5.1 A", "4.9 A"),
         ),
     ]
 }
@@ -245,6 +266,13 @@ fn places() -> Vec<Pair> {
             "valve-regulated cells had better stand in no engine space",
             plant("space = '?'"),
             ("box", "engine"),
+        ),
+        Pair::of(
+            NotChecked,
+            ("R20", "bank-space-not-stated"),
+            "where vented cells stand is stated or not checked",
+            flooded("space = none; ?"),
+            ("space = 'room'", ""),
         ),
         Pair::of(
             NotChecked,

@@ -20,6 +20,18 @@ fn lithium(keys: &str) -> Document {
     Document::lithium("iec").with("generator", keys)
 }
 
+/// An LFP bank that may open under charge, filled by an array.
+fn sunny(keys: &str) -> Document {
+    Document::array("iec", 2, 1)
+        .with(
+            "bank",
+            "chemistry = 'lfp'; nominal = '12.8 V'; disconnect = '12.6 V'; reconnect = '13.4 V'; air = none; \
+             opens_under_charge = true",
+        )
+        .with("controller", "absorption = '14.2 V'; float = '13.5 V'")
+        .with("controller", keys)
+}
+
 /// Two banks with a board and a charger each.
 fn two_banks(charged: &str, board: &str) -> Document {
     Document::plant("iec")
@@ -59,8 +71,8 @@ fn rates() -> Vec<Pair> {
         wrong(
             ("R11", "bank-without-charge"),
             "every bank is charged by something",
-            two_banks("?", "other"),
-            ("reserve", "bank"),
+            two_banks("reserve", "other").with_last("generator", "bank = none; board = none; ?"),
+            ("board = 'other'\nbank = 'reserve'", "board = 'one'\nbank = 'bank'"),
         ),
         Pair::of(
             NotChecked,
@@ -171,6 +183,48 @@ fn rates() -> Vec<Pair> {
             "an alternator on lithium asks what happens when the pack opens",
             lithium("kind = 'alternator'; ?"),
             ("load_dump = true", ""),
+        ),
+        Pair::of(
+            Danger,
+            ("R11", "load-dump"),
+            "a controller bears that its pack opens",
+            sunny("load_dump = ?"),
+            ("true", "false"),
+        ),
+        Pair::of(
+            NotChecked,
+            ("R11", "load-dump-not-stated"),
+            "what a controller does when its pack opens is stated or not checked",
+            sunny("?"),
+            ("load_dump = true", ""),
+        ),
+        // The loads draw 10.01 A; the 15 A of the charger flow the other way.
+        wrong(
+            ("R11", "discharge-above-limit"),
+            "what charges a bank is not drawn from it",
+            Document::plant("iec").with("bank", "greatest_discharge = '?'"),
+            ("10.2 A", "9.8 A"),
+        ),
+        // 126.7 Wh a day, of which AGM returns 0.9: 140.8 Wh.
+        wrong(
+            ("R10", "energy-short"),
+            "as much comes in as is taken out",
+            charger("kind = 'hydro'; load_dump = true; output = '15 A'; daily = '?'"),
+            ("142 Wh", "139 Wh"),
+        ),
+        // The same by 15 A at 12 V: 0.782 h.
+        wrong(
+            ("R10", "energy-short"),
+            "the hours of a source bring what is taken out",
+            charger("hours = '?'"),
+            ("0.79 h", "0.775 h"),
+        ),
+        Pair::of(
+            NotChecked,
+            ("R10", "energy-not-checked"),
+            "what a source brings in a day is stated or not checked",
+            charger("?"),
+            ("hours = '1 h'", ""),
         ),
     ]
 }

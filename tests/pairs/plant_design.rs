@@ -27,6 +27,7 @@ fn sunny(array: &str, coldest: &str, controller: &str) -> Document {
     let months = ["'3 kWh/m2'"; 12].join(", ");
     open("chemistry = 'agm'; temperature = ['20 degC', '30 degC']")
         .without("generator")
+        .with("site", "ambient = ['0 degC', '30 degC']")
         .add("weather", &format!("in_plane = [{months}]; coldest_morning = '{coldest}'"))
         .add("array", &format!("name = 'array'; module = 'm'; route = '2 m'{array}"))
         .add(

@@ -44,8 +44,8 @@ pub fn pairs() -> Vec<Pair> {
         unmade(
             ("R16", "standing-loads-not-stated"),
             "standing loads are listed or not checked",
-            clock("hours = '24 h'; standing = ?"),
-            ("true", "false"),
+            clock("?"),
+            ("standing = true", "hours = '24 h'"),
         ),
         unmade(
             ("R16", "load-time-not-stated"),
@@ -110,24 +110,51 @@ pub fn pairs() -> Vec<Pair> {
         wrong(
             ("R16", "inverter-start-too-large"),
             "an inverter gives the start of its largest load",
-            inverter(PLAIN, "power = '300 W'; start_power = '?'"),
+            inverter(PLAIN, "power = '300 W'; start_power = '?'; start_time = '2 s'"),
             ("990 W", "1010 W"),
         ),
-        // A start lasts 2 s: common practice, no source.
         wrong(
             ("R16", "inverter-start-too-large"),
             "an inverter gives it as long as it lasts",
             inverter(
                 "power = '500 W'; surge = '1000 W'; surge_time = '?'; idle = '1 W'; precharge = true",
-                "power = '300 W'; start_power = '900 W'",
+                "power = '300 W'; start_power = '900 W'; start_time = '2 s'",
             ),
             ("2.1 s", "1.9 s"),
         ),
         unmade(
             ("R16", "inverter-start-not-checked"),
             "what an inverter gives for a start is stated or not checked",
-            inverter("power = '500 W'; surge_time = '5 s'; idle = '1 W'; precharge = true; ?", "power = '300 W'; start_power = '900 W'"),
-            ("surge = '1000 W'", ""),
+            inverter(
+                "power = '500 W'; idle = '1 W'; precharge = true; ?",
+                "power = '300 W'; start_power = '900 W'; start_time = '2 s'",
+            ),
+            ("surge = '1000 W'\nsurge_time = '5 s'", ""),
+        ),
+        unmade(
+            ("R16", "inverter-start-not-checked"),
+            "for how long an inverter gives its surge is stated or not checked",
+            inverter(
+                "power = '500 W'; surge = '1000 W'; idle = '1 W'; precharge = true; ?",
+                "power = '300 W'; start_power = '900 W'; start_time = '2 s'",
+            ),
+            ("surge_time = '5 s'", ""),
+        ),
+        unmade(
+            ("R16", "inverter-start-not-checked"),
+            "how long a start lasts is stated or not checked",
+            inverter(PLAIN, "power = '300 W'; start_power = '900 W'; ?"),
+            ("start_time = '2 s'", ""),
+        ),
+        // What it gives without end it gives for a start, however long that lasts.
+        unmade(
+            ("R16", "inverter-start-not-checked"),
+            "a start within the continuous power needs neither time",
+            inverter(
+                "power = '500 W'; surge = '1000 W'; idle = '1 W'; precharge = true",
+                "power = '300 W'; start_power = '?'",
+            ),
+            ("495 W", "505 W"),
         ),
         unmade(
             ("R16", "inrush-not-checked"),

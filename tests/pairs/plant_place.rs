@@ -3,7 +3,8 @@
 //! 60 V DC: IEC 60364-4-41:2005 (page seen); 30 V for arrays and one bond point: NFPA 70-2023 (recalled). Bonding of masts:
 //! 16 mm², IEC 60728-11, and 10 AWG, NFPA 70-2023, 810.21(H) (recalled).
 
-use ampwright::site::Severity::{Danger, Nonconforming, NotChecked};
+use ampwright::site::Severity::{Advice, Danger, Nonconforming, NotChecked};
+use ampwright::site::{Document as Site, inspect, read};
 
 use crate::document::Document;
 use crate::pair::Pair;
@@ -61,11 +62,19 @@ pub fn pairs() -> Vec<Pair> {
             site("craft_us", "bonds = ?").with("load", "use = 'critical'"),
             ("1", "2"),
         ),
-        wrong(
-            ("R19", "floating-but-bonded"),
-            "a floating system is tied to earth nowhere",
-            site("iec", "earthing = 'floating'; bonds = ?"),
-            ("0", "1"),
+        Pair::of(
+            Advice,
+            ("R19", "floating-system"),
+            "the insulation of a floating system is monitored",
+            site("iec", "earthing = 'floating'; bonds = none; monitoring = '?'"),
+            ("insulation", "none"),
+        ),
+        Pair::of(
+            Advice,
+            ("R19", "floating-system"),
+            "earth-fault protection of an array does not monitor a floating system",
+            site("iec", "earthing = 'floating'; bonds = none; monitoring = '?'"),
+            ("insulation", "earth_fault"),
         ),
         wrong(
             ("R20", "surge-protection-missing"),
@@ -134,4 +143,19 @@ pub fn pairs() -> Vec<Pair> {
             ("29.5 V", "29.6 V"),
         ),
     ]
+}
+
+/// A file that says both is refused when it is read; a document that a program changes is not.
+#[test]
+fn a_floating_system_is_tied_to_earth_nowhere() {
+    let refused = read(&site("iec", "earthing = 'floating'; bonds = 1").to_string());
+    assert!(refused.is_err_and(|problems| problems.to_string().contains("no pole is tied to earth")));
+    let mut document = read(&site("iec", "earthing = 'floating'; bonds = 0").to_string()).unwrap();
+    let bonded = |document: &Site| {
+        let report = inspect(document).unwrap();
+        report.findings.iter().find(|f| f.slug == "floating-but-bonded").map(|f| f.severity)
+    };
+    assert_eq!(bonded(&document), None);
+    document.place.bonds = Some(1);
+    assert_eq!(bonded(&document), Some(Nonconforming));
 }

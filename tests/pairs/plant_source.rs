@@ -1,7 +1,7 @@
 //! Conductors of sources that limit themselves: arrays, converters, chargers, alternators (R4, R7); what a
 //! new load asks of all that feeds it (R21).
 
-use ampwright::site::Severity::{Danger, Nonconforming};
+use ampwright::site::Severity::{Danger, Nonconforming, NotChecked};
 
 use crate::document::{Document, device};
 use crate::pair::Pair;
@@ -13,7 +13,7 @@ const CLIPPED: &str = "size = '2.5 mm2'; insulation = 'PVC 70 degC'; installed =
 fn feed(rules: &str, conductor: &str, current: &str) -> Document {
     Document::array(rules, 2, 1)
         .with("site", "covered = true; monitoring = 'insulation'")
-        .with("array", &format!("isc = '{current}'; series_fuse = '60 A'"))
+        .with("array", &format!("isc = '{current}'; series_fuse = '60 A'; route = none"))
         .add(
             "circuit",
             &format!("name = 'feed'; from = 'array'; to = 'regulator'; one_way = '2 m'; {conductor}"),
@@ -48,14 +48,20 @@ fn converter(limit: &str) -> Document {
         )
 }
 
+/// A converter whose limit its output and input carry, and a load of 5 A behind its board on 2.5 mm² with 20 A of gG.
+fn branch(limit: &str) -> Document {
+    converter(limit)
+        .with_last("circuit", "size = '6 mm2'")
+        .with_last("load", "route = none; board = none")
+        .add("circuit", &format!("name = 'radio'; from = 'second'; to = 'radio'; one_way = '1 m'; {CLIPPED}"))
+        .add("circuit.device", &device("gG", "20 A"))
+}
+
 /// A charger of which the conductor is stated, with a device at the bank's end only.
 fn charger(kind: &str, output: &str, at_the_bank: &str) -> Document {
     Document::plant("iec")
         .with("bank", "capacity = '300 Ah'; greatest_discharge = '100 A'")
-        .with(
-            "generator",
-            &format!("kind = '{kind}'; output = '{output}'; load_dump = true; self_limiting = true"),
-        )
+        .with("generator", &format!("kind = '{kind}'; output = '{output}'; load_dump = true; route = none"))
         .add("board", "name = 'main'; busbar = '100 A'")
         .add("circuit", "name = 'main'; from = 'bank'; to = 'main'; one_way = '1 m'")
         .add(
@@ -131,8 +137,32 @@ pub fn pairs() -> Vec<Pair> {
             Danger,
             ("R7", "device-missing"),
             "an alternator that limits itself has its device at the bank's end",
-            charger("alternator", "20 A", "?"),
+            charger("alternator", "20 A", "?").with("generator", "self_limiting = true"),
             ("to", "from"),
+        ),
+        Pair::of(
+            NotChecked,
+            ("R7", "source-limit-not-stated"),
+            "whether an alternator limits itself is stated or not checked",
+            charger("alternator", "20 A", "to").with("generator", "self_limiting = ?"),
+            ("true", "false"),
+        ),
+        Pair::of(
+            NotChecked,
+            ("R7", "source-limit-not-stated"),
+            "an alternator that does not limit itself has a device at its own end too",
+            charger("alternator", "20 A", "to")
+                .add("circuit.device", &device("class T", "25 A"))
+                .with_last("circuit.device", "?"),
+            ("end = 'from'", "end = 'to'"),
+        ),
+        // gG of 20 A open at 32 A only: of 28 A it sees nothing, and 2.5 mm² carry 27 A.
+        Pair::of(
+            Danger,
+            ("R6", "least-fault-too-small"),
+            "behind the board of a converter a conductor carries the limit that no device sees",
+            branch("?"),
+            ("26.5 A", "27.5 A"),
         ),
     ]
 }

@@ -476,7 +476,7 @@ mod tests {
         let cold = lead_acid(Chemistry::Flooded, 0.5, 0.2, -10.0);
         let error = lead_acid_capacity(&cold).unwrap_err();
         assert!(
-            matches!(error, Error::TableEnds { value: -10.0, remedy, .. } if remedy.contains("state its factor")),
+            matches!(error, Error::TableEnds { value: -10.0, remedy, .. } if remedy.contains("cold_capacity")),
             "{error}"
         );
         let steps = lead_acid_capacity(&LeadAcidNeed { stated_factor: Some(r(1.8)), ..cold }).unwrap();

@@ -346,7 +346,7 @@ fn judge_all(
                 place: format!("[[circuit]] \"{}\"", circuit.name),
                 text: error.to_string(),
             })?;
-            replaced(index, core::mem::replace(slot, Some(done)));
+            replaced(index, slot.replace(done));
         }
     }
     Ok(())
@@ -556,13 +556,10 @@ fn fit(
     }
     for (entry, stated) in circuit.devices.iter().enumerate() {
         let complete = complete(stated);
-        let guard = match complete {
-            Some(guard) => Some((guard, None)),
-            None => {
-                let best = offers.best(&run_at(stated.end), draft, bare, Some(stated));
-                best.map(|(guard, judged)| (guard, Some(judged)))
-            }
-        };
+        let guard = complete.map(|guard| (guard, None)).or_else(|| {
+            let best = offers.best(&run_at(stated.end), draft, bare, Some(stated));
+            best.map(|(guard, judged)| (guard, Some(judged)))
+        });
         if let Some((guard, judged)) = guard {
             let own = Fitted {
                 name: stated.name.clone(),

@@ -62,14 +62,19 @@ pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
     }
 }
 
-/// Greatest current through a bank's terminals, of charge or discharge.
+/// Greatest current through a bank: what is drawn from it, or what its sources drive into it.
 pub(in crate::site) fn carried(site: &Site, plan: &Plan, name: &str) -> ElectricCurrent {
-    site.circuits
+    let charge: ElectricCurrent = site
+        .circuits
         .iter()
         .zip(&plan.circuits)
         .filter(|(c, _)| c.from == name || c.to == name)
-        .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current))
-        .sum()
+        .filter_map(|(_, p)| p.as_ref())
+        .filter(|p| p.flow.charged)
+        .map(|p| p.judgement.current)
+        .sum();
+    let drawn = drawn(site, plan, name);
+    if charge > drawn { charge } else { drawn }
 }
 
 /// Greatest current out of a bank.
