@@ -104,8 +104,9 @@ fn size_and_cold() -> Vec<Pair> {
             cold("temperature = ['?', '30 degC']; depth = '80 %'"),
             ("-8 degC", "-9 degC"),
         ),
-        wrong(
-            ("R13", "charge-blocked-by-cold"),
+        Pair::of(
+            Danger,
+            ("R13", "charge-not-blocked-in-cold"),
             "lithium is not charged below freezing",
             lithium("temperature = ['?', '30 degC']"),
             ("0 degC", "-1 degC"),

@@ -61,7 +61,7 @@ fn a_battery_that_takes_no_charge_in_the_cold_is_not_bought() {
     holds(&at("0 degC"), "of \"shy\"");
     let frost = at("-1 degC");
     holds(&frost, "of \"hardy\"");
-    holds(&frost, "battery shy: at -1 °C it takes no charge; it needs 0 °C at least");
+    holds(&frost, "battery shy: at -1 °C it must not be charged; it needs 0 °C at least");
 }
 
 /// Three modules of 22 V reach the 70 V of the controller at 22 × 3 × (1 + 0.003 × 20.2 K), which is 4.8 °C.

@@ -137,7 +137,7 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
                     place.clone(),
                     line,
                     format!(
-                        "bears {} V, but the bank reaches {} V while it is charged cold",
+                        "bears {} V, but its source reaches {} V at its highest",
                         digits(greatest),
                         digits(highest)
                     ),
@@ -147,7 +147,7 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
                 Some(greatest) => found.pass(
                     "R3",
                     &place,
-                    &format!("bears {} V, the bank reaches {} V", digits(greatest), digits(highest)),
+                    &format!("bears {} V, its source reaches {} V", digits(greatest), digits(highest)),
                 ),
                 None => found.add(
                     Severity::NotChecked,

@@ -2,6 +2,7 @@
 
 use alloc::format;
 use alloc::string::ToString;
+use alloc::vec::Vec;
 
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
@@ -11,6 +12,7 @@ use super::At;
 use crate::array::{PvCheck, PvOutcome, PvSubject, StringsChecked};
 use crate::citation::Seen;
 use crate::site::finding::{Findings, Severity, digits};
+use crate::site::graph::{Graph, Item};
 use crate::site::parts::{ControllerKind, Monitoring};
 use crate::site::pv::{bank_of, checked};
 use crate::site::system::{Array, Site};
@@ -45,6 +47,7 @@ pub(super) fn arrays(site: &Site, found: &mut Findings) {
                 earth_fault(site, &strings, &mut at);
                 touch(site, &strings, &mut at);
                 clamp(site, array, &strings, &mut at);
+                loads_in_reach(site, array, &strings, &mut at);
             }
             Err(error) => at.unmade(("R10", "array-not-checked"), &format!("strings: {error}")),
         }
@@ -225,5 +228,51 @@ fn clamp(site: &Site, array: &Array, strings: &StringsChecked, at: &mut At<'_>) 
             ),
             "use modules nearer to the bank's voltage, or a tracking controller",
         );
+    }
+}
+
+/// A controller that joins array and bank passes the array's voltage on once the bank is gone: its disconnect opened, or
+/// its device. Loads that do not bear it are told (R11).
+fn loads_in_reach(site: &Site, array: &Array, strings: &StringsChecked, at: &mut At<'_>) {
+    let Some(controller) = array.controller.and_then(|c| site.controllers.get(c)) else { return };
+    let Some(bank) = bank_of(site, controller) else { return };
+    let Some((cold, _)) = strings.voltages.cold_voc else { return };
+    if controller.kind != Some(ControllerKind::Pwm) {
+        return;
+    }
+    let trees = Graph::new(site).trees();
+    let of_bank =
+        |item: Item| matches!(item, Item::Bank(i) if site.banks.get(i).is_some_and(|b| b.name == bank.name));
+    let Some(tree) = trees.iter().find(|t| t.nodes.iter().any(|n| of_bank(n.item))) else { return };
+    let bears = |item: Item| match item {
+        Item::Load(i) => site.loads.get(i).map(|l| (l.name.as_str(), l.greatest)),
+        Item::Inverter(i) => site.inverters.get(i).map(|v| (v.name.as_str(), v.greatest)),
+        Item::ConverterInput(i) => site.converters.get(i).map(|c| (c.name.as_str(), c.greatest)),
+        _ => None,
+    };
+    let weak: Vec<&str> = tree
+        .nodes
+        .iter()
+        .filter_map(|node| bears(node.item))
+        .filter(|(_, greatest)| greatest.is_some_and(|g| g < cold))
+        .map(|(name, _)| name)
+        .collect();
+    if weak.is_empty() {
+        return;
+    }
+    let (volts, names) = (digits(cold.get::<volt>()), weak.join(", "));
+    match controller.load_dump {
+        Some(true) => at.pass("R11", "its controller keeps the array's voltage from the loads when the bank is off"),
+        Some(false) => at.danger(
+            ("R11", "array-reaches-loads"),
+            format!("with the bank off, its controller passes up to {volts} V on; that is above what {names} bears"),
+            "use a controller that bears load dump, or loads made for that voltage",
+        ),
+        None => at.unmade(
+            ("R11", "array-reaches-loads-not-checked"),
+            &format!(
+                "whether its controller, with the bank off, keeps {volts} V of the array from {names}; state load_dump"
+            ),
+        ),
     }
 }

@@ -53,7 +53,8 @@ pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
         if let Some(demand) = demand {
             capacity(site, bank, chemistry, part, demand, &mut at);
         }
-        cold(site, bank, chemistry, part, demand, &mut at);
+        let is_charged = site.chargers.iter().any(|c| c.bank == Some(index));
+        cold(site, bank, (chemistry, is_charged), part, demand, &mut at);
         disconnects(site, bank, chemistry, part, demand, &mut at);
         limits(bank, part, &mut at);
         ventilation(bank, chemistry, part, &mut at);
@@ -159,7 +160,7 @@ fn capacity(
 fn cold(
     site: &Site,
     bank: &BankEntry,
-    chemistry: Chemistry,
+    (chemistry, is_charged): (Chemistry, bool),
     part: &BankPart,
     demand: Option<&Demand>,
     at: &mut At<'_>,
@@ -233,18 +234,27 @@ fn cold(
         })
         .ok()
     });
-    at.nonconforming(
-        ("R13", "charge-blocked-by-cold"),
-        format!(
-            "at {} °C, its coldest, it takes no charge{}",
-            digits(celsius),
-            lasts.map_or_else(String::new, |o| format!(
-                ": the loads empty it in {} d",
-                digits(o.until_disconnect.get::<day>())
-            ))
-        ),
-        "keep the bank warmer, or use one that is charged in frost",
+    let text = format!(
+        "at {} °C, its coldest, it must not be charged{}",
+        digits(celsius),
+        lasts.map_or_else(String::new, |o| format!(
+            ": the loads empty it in {} d",
+            digits(o.until_disconnect.get::<day>())
+        ))
     );
+    if from.is_none() && is_charged {
+        at.danger(
+            ("R13", "charge-not-blocked-in-cold"),
+            format!("{text}; nothing is known to block its sources"),
+            "fit what blocks charge in the cold and state charge_from, keep the bank warmer, or use another chemistry",
+        );
+    } else {
+        at.nonconforming(
+            ("R13", "charge-blocked-by-cold"),
+            text,
+            "keep the bank warmer, or use one that is charged in frost",
+        );
+    }
 }
 
 /// Disconnect and reconnect (R14).

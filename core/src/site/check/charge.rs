@@ -276,7 +276,7 @@ fn cold(
     {
         at.nonconforming(
             ("R11", "charge-blocked-by-heat"),
-            format!("at {} °C, its warmest, it takes no charge", digits(warmest.get::<degree_celsius>())),
+            format!("at {} °C, its warmest, it must not be charged", digits(warmest.get::<degree_celsius>())),
             "keep the bank cooler",
         );
     }

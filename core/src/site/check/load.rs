@@ -2,6 +2,7 @@
 
 use alloc::format;
 
+use uom::si::electric_current::ampere;
 use uom::si::energy::watt_hour;
 use uom::si::power::watt;
 
@@ -100,6 +101,29 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
             judged(&mut at, &verdict);
         }
         inrush(site, entry, circuit, plan, &mut at);
+    }
+}
+
+/// Every converter against what hangs on its output.
+pub(super) fn converters(site: &Site, plan: &Plan, found: &mut Findings) {
+    for converter in &site.converters {
+        let mut at = At::new(found, format!("converter \"{}\"", converter.name), converter.line);
+        let limit = converter.limit.get::<ampere>();
+        let leaving = site.circuits.iter().zip(&plan.circuits).filter(|(c, _)| c.from == converter.name);
+        // Its first conductors are laid out for the limit: what the loads draw is kept beside it.
+        let drawn: f64 = leaving
+            .filter_map(|(_, p)| p.as_ref())
+            .map(|p| p.flow.low_current.unwrap_or(p.flow.current))
+            .sum();
+        if drawn > limit * (1.0 + 1e-9) {
+            at.nonconforming(
+                ("R16", "converter-overloaded"),
+                format!("its loads draw {} A, at most {} A", digits(drawn), digits(limit)),
+                "use a larger converter, or fewer loads at a time",
+            );
+        } else if drawn > 0.0 {
+            at.pass("R16", &format!("its loads draw {} A, at most {} A", digits(drawn), digits(limit)));
+        }
     }
 }
 

@@ -72,6 +72,7 @@ pub(super) fn plant(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
     }
     load::loads(site, demands, found);
     load::inverters(site, plan, found);
+    load::converters(site, plan, found);
     balance::balance(site, demands, found);
     bank::banks(site, plan, demands, found);
     charge::banks(site, found);

@@ -623,7 +623,7 @@ fn charges_in_the_cold(site: &Site, stated: &BankPart, battery: &StockBattery) -
     );
     if coldest < from {
         return Err(format!(
-            "at {} °C it takes no charge; it needs {} °C at least",
+            "at {} °C it must not be charged; it needs {} °C at least",
             digits(coldest),
             digits(from)
         ));

@@ -17,13 +17,14 @@ use super::path::poles;
 use crate::cable::{Conductor, Stud};
 use crate::device::Supply;
 use crate::protection::Guard;
-use crate::quantity::ConductorSize;
+use crate::quantity::{ConductorSize, ElectricCurrent};
 use crate::site::check::bank::carried;
 use crate::site::finding::digits;
 use crate::site::model::{CircuitEntry, Return, StockDevice};
 use crate::site::parts::{ControllerKind, ControllerPart};
 use crate::site::plan::{Plan, Planned};
 use crate::site::plant::busbar_needs;
+use crate::site::pv::checked;
 use crate::site::report::Report;
 use crate::site::system::{FeedKind, Site};
 use crate::site::text::{conductor_words, device_words};
@@ -156,6 +157,20 @@ fn strings(site: &Site, plan: &Plan, basket: &mut Basket) {
             digits(amps)
         );
         basket.pieces(1, what, &array.part.name, None, None);
+        let Some(Ok(strings)) = checked(site, array) else { continue };
+        if strings.device_required == Some(true) {
+            let currents = &strings.currents;
+            let amps = |found: Option<_>| {
+                found.map_or_else(|| "?".to_string(), |a: ElectricCurrent| digits(a.get::<ampere>()))
+            };
+            let what = format!(
+                "device for one string of modules, {} to {} A, at least {} V DC",
+                amps(currents.device_least),
+                amps(currents.device_most),
+                digits(feed.highest.get::<volt>())
+            );
+            basket.pieces(array.strings, what, &array.part.name, None, None);
+        }
     }
 }
 

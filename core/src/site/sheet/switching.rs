@@ -144,7 +144,8 @@ fn bank_gear(site: &Site, plan: &Plan, bank: &BankEntry, words: fn(&Gear) -> Str
 fn isolator(site: &Site, plan: &Plan, array: &Array, words: fn(&Gear) -> String) -> Option<String> {
     let gear = listed(site, plan, core::iter::once(array.part.name.as_str()), words);
     let closing = words(&Gear { switches: alloc::vec!["its isolator".to_string()], fuses: Vec::new() });
-    match (array.part.isolator.is_some(), gear.is_empty()) {
+    // A designed array is to be bought with one.
+    match (array.part.isolator.is_some() || array.designed, gear.is_empty()) {
         (true, true) => Some(closing),
         // Closed last, opened first.
         (true, false) if closing.starts_with("close") => Some(format!("{gear}; then {closing}")),
