@@ -1,7 +1,7 @@
 //! Designs what a site file leaves out, checks what it states, and prints the report.
 //!
 //! `cargo run --release --example design_site` takes the Heron Point demo; `-- PATH` takes that file;
-//! `-- --compare EARLIER LATER` inspects both and prints what changed.
+//! `-- --compare EARLIER LATER` inspects both and prints what changed. `--json` before any of these prints the same as JSON.
 //! Exit status 0: nothing stands against the site, or nothing differs; 1: a danger, a nonconformity or a check not made, or
 //! something differs; 2: bad input.
 
@@ -10,24 +10,34 @@ use std::fs::{self, File};
 use std::io::{Read, Write};
 use std::process::ExitCode;
 
-use ampwright::site::{self, Report};
+use ampwright::site::{self, Comparison, Report};
 
 /// The reader refuses more; reading stops shortly behind it, so that no file fills the memory.
 const MOST_BYTES: u64 = 8 * 1024 * 1024 + 1;
 
 fn main() -> ExitCode {
     let arguments: Vec<OsString> = std::env::args_os().skip(1).collect();
-    let done = match arguments.as_slice() {
-        [] => inspected(include_bytes!("sites/heron_point.toml"))
-            .map(|report| (report.to_string(), report.exit_code())),
-        [compare, earlier, later] if compare == "--compare" => compared(earlier, later),
-        [compare, ..] if compare == "--compare" => {
-            Err("two site files to compare, please: design_site --compare EARLIER LATER".to_string())
+    let (as_json, rest) = match arguments.as_slice() {
+        [first, rest @ ..] if first == "--json" => (true, rest),
+        all => (false, all),
+    };
+    let done = match rest {
+        [] => inspected(include_bytes!("sites/heron_point.toml")).map(|report| told(&report, as_json)),
+        [compare, earlier, later] if compare == "--compare" => {
+            compared(earlier, later).map(|changes| told_changes(&changes, as_json))
         }
-        [path] => load(path)
-            .and_then(|bytes| inspected(&bytes))
-            .map(|report| (report.to_string(), report.exit_code())),
-        _ => Err("one site file at a time, please: design_site [PATH]".to_string()),
+        [compare, ..] if compare == "--compare" => {
+            Err("two site files to compare, please: design_site [--json] --compare EARLIER LATER".to_string())
+        }
+        [first, ..] if is_option(first) => Err(format!(
+            "'{}' is no option here; there are --json, then --compare: design_site [--json] [PATH]",
+            first.to_string_lossy()
+        )),
+        [path] => load(path).and_then(|bytes| inspected(&bytes)).map(|report| told(&report, as_json)),
+        [_, last] if last == "--json" => {
+            Err("--json comes first, please: design_site --json [PATH]".to_string())
+        }
+        _ => Err("one site file at a time, please: design_site [--json] [PATH]".to_string()),
     };
     match done {
         Ok((text, status)) => {
@@ -42,14 +52,30 @@ fn main() -> ExitCode {
     }
 }
 
+/// The report in words or as JSON, and its status.
+fn told(report: &Report, as_json: bool) -> (String, u8) {
+    (if as_json { report.to_json() } else { report.to_string() }, report.exit_code())
+}
+
+/// What changed in words or as JSON, and 1 where anything did.
+fn told_changes(changes: &Comparison, as_json: bool) -> (String, u8) {
+    let text = if as_json { changes.to_json() } else { changes.to_string() };
+    (text, u8::from(!changes.is_empty()))
+}
+
+/// A word with two dashes in front is no file: `./--name` is.
+fn is_option(word: &OsStr) -> bool {
+    word.to_string_lossy().starts_with("--")
+}
+
 fn inspected(bytes: &[u8]) -> Result<Report, String> {
     site::read_bytes(bytes)
         .and_then(|document| site::inspect(&document))
         .map_err(|problems| problems.to_string())
 }
 
-/// What changed, and 1 where anything did.
-fn compared(earlier: &OsStr, later: &OsStr) -> Result<(String, u8), String> {
+/// What changed.
+fn compared(earlier: &OsStr, later: &OsStr) -> Result<Comparison, String> {
     // Two files: every problem is told with the name of its own.
     let report = |path: &OsStr| {
         load(path).and_then(|bytes| {
@@ -57,8 +83,7 @@ fn compared(earlier: &OsStr, later: &OsStr) -> Result<(String, u8), String> {
             inspected(&bytes).map_err(|text| text.lines().map(named).collect::<Vec<_>>().join("\n"))
         })
     };
-    let changes = report(later)?.compare(&report(earlier)?);
-    Ok((changes.to_string(), u8::from(!changes.is_empty())))
+    Ok(report(later)?.compare(&report(earlier)?))
 }
 
 fn load(path: &OsStr) -> Result<Vec<u8>, String> {

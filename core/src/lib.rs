@@ -1,4 +1,5 @@
-//! Low-voltage DC power where there is no grid: cables, fuses, banks, computed with units and reasons.
+//! Low-voltage DC power where there is no grid: banks, arrays, controllers, inverters, cables and fuses, computed with
+//! units and reasons.
 //!
 //! A quantity of the wrong kind does not compile, a number out of range is an error that names it, and a result
 //! carries its reason: which limit decided, from which table of which edition, and whether that page was seen. What
@@ -44,14 +45,27 @@
 //! # Ok::<(), Error>(())
 //! ```
 //!
-//! The guide works the same run by hand, check by check: `guide::run_sizing`. A whole site, with shared feeders and
-//! several banks, is read from a file by [`site::read`] and answered by [`site::inspect`].
+//! A whole site, from loads and a place or from what is built, is read from a file by `site::read` and answered by
+//! `site::inspect`: what is stated is checked, what is left out is designed.
+//!
+//! # Guide
+//!
+//! | page of `guide` | what it holds |
+//! | --- | --- |
+//! | `first_hour` | from nothing to a report, then from Rust |
+//! | `bank_sizing` | how bank, array and inverter are sized, with one case by hand |
+//! | `run_sizing` | how a run is sized, the case above by hand, check by check |
+//! | `site_file` | every key of a site file |
+//! | `report` | the report as JSON |
+//! | `rule_sets` | what each rule set holds and leaves out |
+//! | `rules` | the rules R1 to R22, and every finding by its slug |
+//! | `not_covered` | what is missing or simplified, and what that leaves to whoever signs |
 //!
 //! # Features
 //!
 //! | feature | gives | without it |
 //! | --- | --- | --- |
-//! | `site` (default; takes `std`) | the site file, its checks, the report | every law, table, check and solver is still there |
+//! | `site` (default; takes `std`) | the site file, its design and checks, the report | every law, table, check and solver is still there |
 //! | `std` (takes `alloc`) | the standard library's square root; calculations on arrays | runs without an operating system |
 //! | `alloc` | nothing of its own yet | runs without a heap: nothing below `site` allocates |
 //!
@@ -63,19 +77,23 @@
 //!
 //! | floor | rooms |
 //! | --- | --- |
-//! | 6 | `site`: document, report |
+//! | 6 | `site`: document, design, checks, readings, report, comparison |
 //! | 4 | [`network`] volts and amperes in a tree, [`protection`] devices and their place, [`circuit`] judging and sizing one run |
 //! | 3 | [`rules`] rule sets as data |
-//! | 2 | [`cable`], [`device`], [`battery`]: the physical things |
+//! | 2 | [`cable`] conductors, insulation, joints; [`device`] fuses and breakers |
+//! | 2 | [`battery`] chemistries, capacity, charge, cold, sharing, air; [`mod@array`] modules, strings, layouts |
+//! | 2 | [`converter`] charge controllers, DC–DC converters, inverters; [`generator`] engine sets, alternators, what sources give together; [`load`] schedules, duty, starts, what coincides |
 //! | 1 | [`law`] Ohm, power, energy, sources; [`catalogue`] how calculations are declared |
 //! | 0 | [`quantity`] units and their text form, [`error`], [`citation`] |
 //!
-//! [`prelude`] brings together what everyday work needs.
+//! The rooms of one floor know nothing of each other: they pass numbers. [`prelude`] brings together what everyday work
+//! needs.
 //!
 //! # Cautions
 //!
 //! - A bank stores enough energy to melt tools, and drives thousands of amperes through a fault.
-//! - A DC arc does not go out by itself: nothing is opened under load that is not made for it.
+//! - A DC arc does not go out by itself: nothing is opened under load that is not made for it. An array in light cannot
+//!   be switched off.
 //! - Lead-acid and nickel banks give off hydrogen while they charge.
 //! - Isolate, secure against switching on, and prove dead before work.
 //! - Local codes and licensed practice decide; the text of each standard governs, in the edition in force. Which
@@ -137,12 +155,21 @@ pub mod guide {
     #[doc = include_str!("../guide/run_sizing.md")]
     pub mod run_sizing {}
     #[cfg(feature = "site")]
+    #[doc = include_str!("../guide/bank_sizing.md")]
+    pub mod bank_sizing {}
+    #[cfg(feature = "site")]
     #[doc = include_str!("../guide/site_file.md")]
     pub mod site_file {}
+    #[cfg(feature = "site")]
+    #[doc = include_str!("../guide/report.md")]
+    pub mod report {}
     #[doc = include_str!("../guide/rule_sets.md")]
     pub mod rule_sets {}
     #[doc = include_str!("../guide/rules.md")]
     pub mod rules {}
+    #[cfg(feature = "site")]
+    #[doc = include_str!("../guide/not_covered.md")]
+    pub mod not_covered {}
 }
 
 pub use error::Error;

@@ -1,4 +1,5 @@
-//! One `use` for everyday work: quantities and their units, conductors, devices, rule sets, runs, and the laws.
+//! One `use` for everyday work: quantities and their units, the laws, loads, banks, arrays, inverters, conductors,
+//! devices, rule sets and runs.
 //!
 //! Everything here also stands in its room, beside what is needed less often: sources in series and parallel, for
 //! one, have a `Source` of their own in [`crate::law`]. Units are types of [`uom`], so while
@@ -19,8 +20,9 @@
 pub use crate::error::Error;
 pub use crate::quantity::{
     Area, ChargeRate, ConductorSize, ElectricCharge, ElectricCurrent, ElectricPotential,
-    ElectricalResistance, ElectricalResistivity, Energy, Length, LinearResistance, Power, Ratio,
-    StateOfCharge, TemperatureInterval, ThermodynamicTemperature, Time, parse, readable,
+    ElectricalResistance, ElectricalResistivity, Energy, Irradiance, Irradiation, Length, LinearResistance,
+    Power, Ratio, RatioPerTemperature, StateOfCharge, TemperatureInterval, ThermodynamicTemperature, Time,
+    parse, readable,
 };
 pub use uom::si::area::square_millimeter;
 pub use uom::si::electric_charge::ampere_hour;
@@ -44,13 +46,22 @@ pub use crate::law::{
     usable_energy, voltage_drop,
 };
 
+pub use crate::array::{
+    KeyPoints, Module, ModuleSheet, array_power, cell_temperature, energy_need, module_power,
+    modules_in_series, open_circuit_voltage_cold, operating_voltage_hot, sun_hours,
+};
 pub use crate::battery::{
-    Chemistry, charge_current_limit, charge_limit, discharge_current_limit, discharge_limit,
+    Chemistry, LeadAcidNeed, LithiumNeed, charge_current_limit, charge_limit, discharge_current_limit,
+    discharge_limit, disconnect, freezing_point, hour_rate_capacity, layout, lead_acid_capacity,
+    lithium_capacity, set_points, ventilation_flow, ventilation_opening,
 };
 pub use crate::cable::{
     Class, Coating, Compound, Conductor, Insulation, JointKind, Material, joint_resistance,
 };
+pub use crate::converter::Inverter;
 pub use crate::device::{Device, Family, Polarity, Supply};
+pub use crate::generator::{alternator_hot_current, generator_derated_power};
+pub use crate::load::{Draw, Load, Schedule, daily_charge, daily_energy, duty_at_ambient, starting_power};
 pub use crate::rules::{Ampacity, AmpacityQuery, Installation, LoadUse, Overrides, Rules, Space};
 
 pub use crate::circuit::{

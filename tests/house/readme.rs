@@ -1,13 +1,20 @@
 //! The README shows what the programs print, and calls that are tested where they stand.
 
-use ampwright::site::{Problems, inspect, read};
+use ampwright::site::{Problems, Report, inspect, read};
 
 use crate::{compare_committed, text};
 
-/// Reports by the name of their site file.
+/// What is printed of a site file; `LATER against EARLIER` compares two, `SITE as JSON` writes JSON.
 fn report(site: &str) -> String {
-    let print = |text: &str| -> Result<String, Problems> { Ok(inspect(&read(text)?)?.to_string()) };
-    print(&text(&format!("core/examples/sites/{site}"))).unwrap_or_else(|e| panic!("{site}: {e}"))
+    let inspected = |site: &str| {
+        let report = |text: &str| -> Result<Report, Problems> { inspect(&read(text)?) };
+        report(&text(&format!("core/examples/sites/{site}"))).unwrap_or_else(|e| panic!("{site}: {e}"))
+    };
+    match (site.split_once(" against "), site.strip_suffix(" as JSON")) {
+        (Some((later, earlier)), _) => inspected(later).compare(&inspected(earlier)).to_string(),
+        (None, Some(site)) => inspected(site).to_json(),
+        (None, None) => inspected(site).to_string(),
+    }
 }
 
 /// `<!-- printed: SITE, from "LINE", COUNT lines -->` as its parts.

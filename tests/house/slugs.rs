@@ -9,6 +9,7 @@ use crate::{rust_files, text};
 
 const GUIDE: &str = "core/guide/rules.md";
 const SITE: &str = "core/src/site/";
+const CHECKS: &str = "core/src/site/check/";
 
 /// Rule and severities of a finding.
 type Kind = (String, BTreeSet<String>);
@@ -30,6 +31,91 @@ fn bare(literal: &str) -> String {
 fn severity(tokens: &[TokenTree]) -> Option<String> {
     let at = tokens.iter().position(|t| ident(Some(t)).as_deref() == Some("Severity"))?;
     Some(ident(tokens.get(at + 3))?.replace("NotChecked", "Not checked"))
+}
+
+/// Every severity that an expression may be.
+fn severities(tokens: &[TokenTree]) -> BTreeSet<String> {
+    let mut all = BTreeSet::new();
+    for (i, token) in tokens.iter().enumerate() {
+        if ident(Some(token)).as_deref() == Some("Severity") {
+            all.extend(ident(tokens.get(i + 3)).map(|s| s.replace("NotChecked", "Not checked")));
+        }
+        if let TokenTree::Group(inner) = token {
+            all.extend(severities(&inside(inner)));
+        }
+    }
+    all
+}
+
+/// The expression of `let severity = …;`, wherever it stands.
+fn named_severity(tokens: &[TokenTree]) -> BTreeSet<String> {
+    let mut all = BTreeSet::new();
+    for (i, token) in tokens.iter().enumerate() {
+        let named = ident(Some(token)).as_deref() == Some("severity") && is_punct(tokens.get(i + 1), '=');
+        if named {
+            let end = tokens.iter().skip(i).position(|t| is_punct(Some(t), ';')).unwrap_or(0);
+            all.extend(severities(&tokens[i..i + end]));
+        }
+        if let TokenTree::Group(inner) = token {
+            all.extend(named_severity(&inside(inner)));
+        }
+    }
+    all
+}
+
+/// Findings of the plant's checks: `at.danger(("R13", "slug"), …)` and its like, and `at.tell(severity, ("R13", "slug"), …)`.
+fn told(tokens: &[TokenTree], named: &BTreeSet<String>, kinds: &mut Kinds) {
+    for (i, token) in tokens.iter().enumerate() {
+        let TokenTree::Group(inner) = token else { continue };
+        let inner = inside(inner);
+        let arguments: Vec<&[TokenTree]> = inner.split(|t| is_punct(Some(t), ',')).collect();
+        let pair = |at: usize| {
+            let tuple = arguments.get(at).and_then(|a| group(a.first(), Delimiter::Parenthesis));
+            let tuple: Vec<TokenTree> = tuple?.into_iter().collect();
+            match string_literals(&tuple).as_slice() {
+                [rule, slug] => Some((bare(rule), bare(slug))),
+                // The slug comes from elsewhere, and is read there.
+                _ => None,
+            }
+        };
+        let own = |word: &str| BTreeSet::from([word.to_owned()]);
+        let method = i.checked_sub(1).and_then(|before| ident(tokens.get(before)));
+        let found = match method.as_deref() {
+            Some("danger") => pair(0).map(|p| (p, own("Danger"))),
+            // What an inverter suffices for: always the same severity.
+            Some("one") => pair(1).map(|p| (p, own("Nonconforming"))),
+            Some("nonconforming") => pair(0).map(|p| (p, own("Nonconforming"))),
+            Some("advice") => pair(0).map(|p| (p, own("Advice"))),
+            Some("unmade") => pair(0).map(|p| (p, own("Not checked"))),
+            Some("tell") => {
+                let graves = arguments.first().map(|a| severities(a)).unwrap_or_default();
+                pair(1).map(|p| (p, if graves.is_empty() { named.clone() } else { graves }))
+            }
+            _ => None,
+        };
+        if let Some(((rule, slug), graves)) = found {
+            assert!(!graves.is_empty(), "{slug} without a severity");
+            for grave in graves {
+                note(kinds, &slug, &rule, &grave);
+            }
+        }
+        told(&inner, named, kinds);
+    }
+}
+
+/// What a failed check of an array means: `("slug", Severity::…, "remedy")` in the function `meaning`.
+fn meanings(tokens: &[TokenTree], rule: &str, kinds: &mut Kinds) {
+    for token in tokens {
+        let TokenTree::Group(inner) = token else { continue };
+        let tuple = inside(inner);
+        let literals = string_literals(&tuple);
+        match (severity(&tuple), literals.as_slice()) {
+            (Some(grave), [slug, _remedy]) if inner.delimiter() == Delimiter::Parenthesis => {
+                note(kinds, &bare(slug), rule, &grave);
+            }
+            _ => meanings(&tuple, rule, kinds),
+        }
+    }
 }
 
 /// Arguments of every `found.add(…)`, however deep.
@@ -80,6 +166,16 @@ fn arms(tokens: &[TokenTree], function: &str) -> Vec<(String, TokenTree)> {
 fn made() -> Kinds {
     let mut kinds = Kinds::new();
     for path in rust_files(SITE) {
+        if path.starts_with(CHECKS) {
+            let here = tokens(&path, &text(&path));
+            if path != format!("{CHECKS}mod.rs") {
+                told(&here, &named_severity(&here), &mut kinds);
+            }
+            if path == format!("{CHECKS}array.rs") {
+                meanings(&body(&here, "meaning"), "R10", &mut kinds);
+            }
+            continue;
+        }
         let mut additions_here = Vec::new();
         additions(&tokens(&path, &text(&path)), &mut additions_here);
         for arguments in additions_here {
@@ -151,7 +247,7 @@ fn listed(guide: &str) -> Kinds {
 #[test]
 fn the_guide_lists_every_finding_and_no_other() {
     let (made, listed) = (made(), listed(&text(GUIDE)));
-    assert!(made.len() > 60, "only {} findings were found in the source", made.len());
+    assert!(made.len() > 140, "only {} findings were found in the source", made.len());
     let of = |kinds: &Kinds, other: &Kinds| -> Vec<String> {
         kinds.iter().filter(|(slug, kind)| other.get(*slug) != Some(kind)).map(|k| format!("{k:?}")).collect()
     };

@@ -34,11 +34,14 @@ fn no_host_and_no_machine_path_is_named() {
         path => format!("/{path}/"),
     });
     let words: Vec<_> = words.into_iter().chain([["https", "://"].concat()]).collect();
+    // A dialect of JSON Schema is named by an address; nothing is fetched from it.
+    let dialect = [words[5].as_str(), "json-schema.org/draft/2020-12/schema"].concat();
     let mut found = Vec::new();
     // The lock file and the licence are not our wording.
     for path in files().iter().filter(|p| !["Cargo.lock", "LICENSE"].contains(&p.as_str())) {
         let Ok(bytes) = std::fs::read(crate::root().join(path)) else { continue };
         for (number, line) in String::from_utf8_lossy(&bytes).lines().enumerate() {
+            let line = line.replace(&format!("\"$schema\": \"{dialect}\""), "");
             if words.iter().any(|word| line.contains(word.as_str())) {
                 found.push(format!("{path}:{}: {line}", number + 1));
             }

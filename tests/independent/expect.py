@@ -2,7 +2,7 @@
 
 import re
 
-from plant import opens
+from plant import carries, opens
 from tables import LEAST, area, cell, next_standard, us_ampacity, value, withstand_k
 
 
@@ -28,6 +28,9 @@ class Expectation:
             worst = max(states, key=lambda s: s[0][name])
             self.amps = max(worst[0][name], stated)
             self.hours = self.amps * self.share(*worst[1:])
+        given = network.charged.get(name, 0.0)
+        if given > self.amps:                          # what sources give to the bank, for hours
+            self.amps = self.hours = given
         self.degrees = circuit.temperature(self.amps)
         self.ohms = circuit.ohms(self.degrees)
         if self.is_link:
@@ -45,9 +48,10 @@ class Expectation:
             self.path = max((cut_off - end) / network.nominal * 100 for end, _, cut_off in ends)
             self.end, self.low_amps, _ = min(ends)
         self.start = None
-        if "start" in load:
+        if "start" in load or "surge" in load:
             self.start = min(network.solve(r, starting=self.keys["to"], frozen=frozen)[1][self.keys["to"]]
-                             for r in network.banks)
+                             for r in network.banks if self.keys["to"] in low[r][1])
+        self.frozen = frozen
         self.uses = {network.loads[n].get("use", "other") for n in self.served()}
         self.least_supply = load.get("least")
         # A device at an end guards against what that end feeds.
@@ -55,7 +59,7 @@ class Expectation:
         self.greatest = {end: network.greatest(end, circuit) for end in guarded}
         fed = [end for end in guarded if self.fed_from(end)]
         self.least_by_end = {end: network.least(end, circuit) for end in fed}
-        self.least = min(self.least_by_end.values())
+        self.least = min(self.least_by_end.values(), default=None)
 
     def fed_from(self, end):
         return end in self.network.banks or any(
@@ -92,6 +96,12 @@ class Expectation:
             return self.hours / 0.8 + self.amps - self.hours
         return self.amps
 
+    def starting_amps(self):
+        """Greatest current while any one load behind starts, at the volts that it leaves (R3, R16)."""
+        starters = [n for n in self.served() if {"start", "surge", "start_power"} & set(self.network.loads[n])]
+        return max(self.network.solve(r, starting=n, frozen=self.frozen)[0][self.circuit.name]
+                   for r in self.network.banks for n in starters if n in self.network.solve(r)[1])
+
     def column(self):
         """60 °C up to 100 A, 75 °C above or where everything is marked for it; never above the insulation."""
         marks = [self.keys.get("terminal")] + [d.get("terminal") for d in stated_devices(self.keys)]
@@ -112,7 +122,7 @@ class Expectation:
         boards = {b["name"] for b in self.network.site["board"]}
         feeds_board = not self.is_link and bool(set(self.far.values()) & boards)
         if self.circuit.rules == "us":
-            return 3 if feeds_board else 5
+            return 3 if feeds_board or self.keys["to"] in self.network.loads and "critical" in self.uses else 5
         if self.circuit.rules == "iec":
             return 3 if self.uses & {"lighting", "critical"} else 5
         return 3 if feeds_board or self.keys["to"] in self.network.loads and "critical" in self.uses else 10
@@ -122,6 +132,8 @@ class Expectation:
         nothing to recompute."""
         c = self.circuit
         device = other or next(iter(c.devices), None)
+        if device is None and label.startswith(("device", "least")):
+            return None                                # guarded by the device of another circuit
         column = re.search(r"(60|75) °C column", label)
         simple = {
             "mechanical minimum": lambda: (area(c.size), area(LEAST[c.rules])),
@@ -140,6 +152,7 @@ class Expectation:
             "let-through": lambda: (value(self.part(device)["let_through"]),
                                     (withstand_k(c.rules, c.insulation, c.compound) * area(c.size)) ** 2),
             "greatest conductor": lambda: (area(c.size), area(self.part(device)["terminal_range"][1])),
+            "current while it starts against": lambda: (self.starting_amps(), carries(device)),
             "current while it starts": lambda: (
                 value(self.network.loads[self.keys["to"]]["start"]),
                 cell("protection.toml", "iec-60898-3-dc-trip-bands", device["family"][-1], "no_trip")
@@ -156,11 +169,51 @@ class Expectation:
         """The device as the file states it, or the one on the shelf."""
         alike = [d for d in stated_devices(self.keys) if "rating" in d
                  and (d["family"], value(d["rating"])) == (device["family"], device["rating"])]
-        return next(iter(alike), None) or next(
-            d for d in self.network.site["stock"]["device"]
-            if d["family"] == device["family"] and device["rating"] in map(value, d["ratings"]))
+        shelf = self.network.site.get("stock", {}).get("device", [])
+        alike += [d for d in shelf if d["family"] == device["family"] and device["rating"] in map(value, d["ratings"])]
+        to_be_bought = {"dc_voltage": self.highest(), "breaking": self.greatest[device["at"]]}
+        return next(iter(alike), to_be_bought)
 
 
 def stated_devices(keys):
     found = keys.get("device", [])
     return found if isinstance(found, list) else []
+
+
+class ChargerRun(Expectation):
+    """A circuit from a source of charge: its current is all that the source gives, its drop counts up to the bank."""
+
+    def __init__(self, network, circuit, bank=None, source=None):
+        self.network, self.circuit, self.keys, self.is_link = network, circuit, circuit.keys, False
+        self.senses_bank = (source or {"sense": "bank"}).get("sense") == "bank"
+        self.amps = self.hours = self.low_amps = network.charged[circuit.name]
+        self.degrees, self.ohms = circuit.temperature(self.amps), circuit.ohms(circuit.temperature(self.amps))
+        root = bank or next(iter(network.banks))
+        onward = [c.ohms(c.temperature(network.greatest_amps[c.name])) * network.charged[c.name]
+                  for c in network.path(root, circuit.ends[1])]
+        self.path = (self.amps * self.ohms + sum(onward)) / network.nominal * 100
+        self.end = value(network.banks[root]["highest"]) - self.amps * self.ohms
+        self.start, self.least_supply, self.uses, self.far = None, None, set(), {}
+        at = {d["at"] for d in circuit.devices} or {circuit.ends[1]}
+        self.greatest = {end: network.greatest(end, circuit) for end in at}
+        self.least_by_end = {end: network.least(end, circuit) for end in at}
+        self.least = min(self.least_by_end.values(), default=None)
+
+    def drop_limit(self):
+        usual = {"us": 5, "iec": 5}.get(self.circuit.rules, 10)
+        return usual if self.senses_bank else 1        # R11: sense at the bank, or 1 %
+
+
+class ArrayRun(ChargerRun):
+    """A circuit from an array: bright sun loads it, the current at maximum power drops, of the array's own volts."""
+
+    def __init__(self, network, circuit, sun):
+        self.network, self.circuit, self.keys, self.is_link = network, circuit, circuit.keys, False
+        self.senses_bank = True
+        self.amps = self.hours = sun.bright_Isc()
+        self.low_amps = sun.Imp()
+        self.degrees, self.ohms = circuit.temperature(self.amps), circuit.ohms(circuit.temperature(self.amps))
+        self.path = self.low_amps * self.ohms / sun.nominal_Vmp() * 100
+        self.end = sun.hot_Vmp() - self.low_amps * self.ohms
+        self.start, self.least_supply, self.greatest, self.least_by_end = None, None, {}, {}
+        self.least = None

@@ -4,7 +4,7 @@ import functools
 import re
 
 from report import NUMBER
-from tables import COPPER_20, OPENS, area, at, base_ampacity, cell, factors, per_km_20, table, value
+from tables import CELLS, COPPER_20, OPENS, area, at, base_ampacity, cell, factors, per_km_20, table, value
 
 WAYS = {"in conduit": "conduit", "in a loom": "loom", "clipped to a surface": "clipped",
         "cable in conduit": "cable_in_conduit", "in a duct in the ground": "duct"}
@@ -30,8 +30,8 @@ class Circuit:
         self.bundled = keys.get("bundled", 2)
         self.metres = sum(value(keys.get(k, keys.get("one_way"))) for k in ("positive_length", "negative_length"))
         self.printed_ohms = float(re.match(NUMBER, printed["loop"])[0]) / 1000
-        lugs = sum(j.get("count", 1) for j in keys.get("joint", [])) or 4
-        self.fixed = lugs * assumed.lug_ohm
+        joints = keys.get("joint", [{"count": 4}])
+        self.fixed = sum(j.get("count", 1) * value(j.get("resistance", assumed.lug_ohm)) for j in joints)
         for part in keys.get("part", []):
             generic = "resistance" not in part
             self.fixed += assumed.part_V[part["kind"]] / value(part["rating"]) if generic else value(part["resistance"])
@@ -74,6 +74,23 @@ class Circuit:
         return COPPER_20 / area(self.size) / 1000 * self.metres * at(self.coldest)
 
 
+def apparent(loads):
+    return sum(l.get("count", 1) * value(l["power"]) / l.get("power_factor", 1.0) for l in loads)
+
+
+def starting(loads):
+    """Apparent power of all AC loads while the one starts that adds most."""
+    extra = [(value(l["start_power"]) - value(l["power"])) / l.get("power_factor", 1.0)
+             for l in loads if "start_power" in l]
+    return apparent(loads) + max(extra, default=0.0)
+
+
+def carries(device):
+    """Lower conventional current of a printed device: it does not open on it."""
+    rows = table("protection.toml", "iec-60269-gg-conventional")["rows"]
+    return next(r for r in reversed(rows) if device["rating"] >= r[0])[2] * device["rating"]
+
+
 def opens(device):
     """Upper conventional current of a printed device."""
     family, rating = device["family"], device["rating"]
@@ -90,8 +107,14 @@ class Network:
     def __init__(self, site, circuits, assumed):
         self.site, self.circuits, self.assumed = site, circuits, assumed
         self.banks = {b["name"]: b for b in site["bank"]}
-        self.loads = {l["name"]: l for l in site.get("load", []) + site.get("inverter", [])}
+        behind = [l for l in site.get("load", []) if l.get("ac")]
+        self.loads = {l["name"]: l for l in site.get("load", []) if not l.get("ac")}
+        for inverter in site.get("inverter", []):
+            asked = {"start_power": min(starting(behind), value(inverter.get("surge", 1e9)))} if behind else {}
+            self.loads[inverter["name"]] = asked | inverter
         self.nominal = value(site["bank"][0]["nominal"])
+        # What sources of charge give at most, by circuit: it warms the conductor, and drives no fault.
+        self.charged = {}
         # A link with a stated current is a load of that current at either end.
         self.links = [c for c in circuits if "current" in c.keys and self.joins_banks(c)]
 
@@ -120,10 +143,11 @@ class Network:
         load = self.loads.get(name)
         if load is None:
             return amps
-        if name == starting:
+        if name == starting and "start" in load:
             return amps + value(load["start"])
         if "efficiency" in load:
-            return amps + value(load["power"]) / value(load["efficiency"]) / volts
+            power = load.get("start_power", load.get("surge")) if name == starting else load["power"]
+            return amps + value(power) / value(load["efficiency"]) / volts
         count = load.get("count", 1)
         if "current" in load:
             return amps + count * value(load["current"])
@@ -157,12 +181,12 @@ class Network:
     @functools.cached_property
     def greatest_amps(self):
         """Greatest current of each circuit over all banks and both levels: what warms its conductor."""
-        amps = {c.name: value(c.keys.get("current", 0)) for c in self.circuits}
+        floor = {c.name: max(value(c.keys.get("current", 0)), self.charged.get(c.name, 0)) for c in self.circuits}
+        amps = floor
         for _ in range(200):
             states = [self.state(root, "cut_off", amps, self.spare(root, amps)) for root in self.banks]
             states += [self.state(root, "highest", amps, {}) for root in self.banks]
-            new = {c.name: max([value(c.keys.get("current", 0)), *(s[0][c.name] for s in states)])
-                   for c in self.circuits}
+            new = {c.name: max([floor[c.name], *(s[0][c.name] for s in states)]) for c in self.circuits}
             if max(abs(new[k] - amps[k]) for k in amps) < 1e-11:
                 break
             amps = new
@@ -198,15 +222,18 @@ class Network:
             circuit, node = steps[node]
             yield circuit
 
-    def cells(self):
-        return self.nominal / 2          # lead-acid
+    def cell_volts(self, bank):
+        """Volts of all cells in series, full and empty; figures for lead-acid as the report prints them."""
+        nominal, full, empty = CELLS.get(bank["chemistry"], (2.0, self.assumed.full_cell_V, self.assumed.empty_cell_V))
+        cells = round(value(bank["nominal"]) / nominal)
+        return cells * full, cells * empty
 
     def greatest(self, node, through):
         """Greater of the two currents that may flow through a device at one end of a circuit, the end shorted.
 
         All banks full and warm, or at their highest voltage, behind their resistance, conductors cold: nodal equations.
         """
-        emf = {n: max(self.cells() * self.assumed.full_cell_V, value(b["highest"])) for n, b in self.banks.items()}
+        emf = {n: max(self.cell_volts(b)[0], value(b["highest"])) for n, b in self.banks.items()}
         names = sorted({e for c in self.circuits for e in c.ends} | set(self.banks))
         free = [n for n in names if n != node]
         index = {name: i for i, name in enumerate(free)}
@@ -239,9 +266,13 @@ class Network:
         for root, bank in self.banks.items():
             if root != near and all(far != near for _, _, far in self.grown(root, [circuit])):
                 continue
-            ohms = value(bank["internal_resistance"]) * self.assumed.aged_ratio
+            full, empty = self.cell_volts(bank)
+            own = value(bank["internal_resistance"])
+            if "short_circuit" in bank:
+                own = max(own, full / value(bank["short_circuit"]))
+            ohms = own * self.assumed.aged_ratio["lithium" if bank["chemistry"] in CELLS else "lead-acid"]
             ohms += sum(c.ohms(c.insulation) for c in [*self.path(root, near), circuit])
-            found.append(self.cells() * self.assumed.empty_cell_V / ohms)
+            found.append(empty / ohms)
         return min(found)
 
 

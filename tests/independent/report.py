@@ -55,7 +55,7 @@ class Assumptions:
                        "relay": volts("relay"), "shunt": volts("shunt")}
         self.full_cell_V = float(re.search(r"full and warm \(([\d.]+) V a lead-acid cell", text)[1])
         self.empty_cell_V = float(re.search(r"empty \(([\d.]+) V a lead-acid cell", text)[1])
-        self.aged_ratio = float(re.search(r"([\d.]+) times lead-acid", text)[1])
+        self.aged_ratio = {kind: float(ratio) for ratio, kind in re.findall(r"([\d.]+) times ([\w-]+)", text)}
         self.installed = {}
         for way, names in re.findall(r"- installed as (.+?): (.*)", text):
             self.installed |= dict.fromkeys(names.split(", "), way)
@@ -80,14 +80,17 @@ def circuits(text):
     for line in detail.splitlines():
         head = re.match(r"  (\d+)  (.+?): (.+) – (.+)$", line)
         if head:
-            current = {"name": head[2], "checks": [], "refused": [], "devices": [], "row": table[len(found)]}
+            current = {"name": head[2], "ends": (head[3], head[4]), "row": table[len(found)],
+                       "checks": [], "refused": [], "devices": [], "lines": []}
             found[head[2]] = current
             continue
-        body = re.match(r"    (\S+(?: \S+)?)\s{2,}(.*)$", line)
+        body = re.match(r"    (to be bought(?= )|\S+(?: \S+)?\s)\s+(.*)$", line)
         if not body or current is None:
             continue
-        mark, rest = body[1], body[2]
-        if mark in ("passed", "FAILED"):
+        mark, rest = body[1].strip(), body[2]
+        if mark != "governing":
+            current["lines"].append(rest)
+        if mark in ("passed", "FAILED", "to be bought"):
             current["checks"].append(Check(mark, rest, current["devices"]))
         elif mark == "not taken":
             size, reason = rest.split(": ", 1)

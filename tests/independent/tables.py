@@ -16,6 +16,8 @@ REFERENCE = pathlib.Path(__file__).resolve().parents[1] / "reference"
 OPENS = {"class T": 1.35, "blade": 1.35, "molded case": 1.35}
 # Least cross-section, mm²: recalled, as the reports say.
 LEAST = {"us": "14 AWG", "iec": "1.5 mm2", "craft_us": "16 AWG", "craft_iso": "1 mm2"}
+# Nominal, full and empty volts of a lithium cell: recalled, the report prints those of lead-acid only.
+CELLS = {"lfp": (3.2, 3.65, 2.5)}
 COPPER_20 = 1000 / 58        # Ω·mm²/km, IEC 60028
 ZERO = 234.5                 # IEC 60028, inferred zero-resistance temperature, sign changed
 
@@ -33,15 +35,16 @@ def cell(file, name, row, column):
 
 
 PREFIX = {"k": 1e3, "m": 1e-3, "": 1.0}
+PLAIN = {"%": 0.01, "%/K": 0.01, "mV/K": 1e-3, "h": 1.0, "d": 1.0, "s": 1.0, "kWh/m2": 1.0, "cm2": 1.0, "uF": 1e-6}
 
 
 def value(text):
-    """Number in base units (A, V, W, m, ohm, degC, mm2) of a text such as "7.2 mohm"."""
+    """Number in base units (A, V, W, m, ohm, degC, mm2, h, d, cm2) of a text such as "7.2 mohm"."""
     if isinstance(text, (int, float)):
         return float(text)
     number, _, unit = text.partition(" ")
-    if unit == "%":
-        return float(number) / 100
+    if unit in PLAIN:
+        return float(number) * PLAIN[unit]
     if unit in ("mm2", "AWG", "kcmil"):
         return area(text)
     for base in ("ohm", "Ah", "A2s", "degC", "A", "V", "W", "m"):
@@ -130,6 +133,12 @@ def next_standard(amps):
     return next(r for r in ratings if r >= amps)
 
 
+def between(rows, at):
+    """Straight line between the rows (x, y) of a table; none beyond its ends."""
+    (low, less), (high, more) = next(p for p in zip(rows, rows[1:]) if p[0][0] <= at <= p[1][0])
+    return less + (at - low) / (high - low) * (more - less)
+
+
 def up_to(file, name, amount):
     return next(r[1] for r in table(file, name)["rows"] if r[0] == "more" or amount <= r[0])
 
@@ -144,6 +153,8 @@ def factors(rules, insulation, installed, ambient, bundled, space):
         heat = {"ambient": math.sqrt((insulation - ambient) / (insulation - 30)) if ambient > 30 else 1.0}
         if space == "engine":
             heat = {"engine space": cell("ampacity.toml", "cfr-33-183-425-engine-space", insulation, "factor")}
+            if rules == "craft_iso":                    # below the factors of its note, by the air that the note names
+                heat = {"engine space": math.sqrt((insulation - 60) / (insulation - 30))}
         name = "cfr-33-183-425-bundling" if rules == "craft_us" else "iso-13297-bundling"
         return heat | {"bundled conductors": up_to("ampacity.toml", name, bundled)}
     if installed == "duct":                             # Table B.52.15 is not in the reference: its formula, base 20 °C

@@ -66,17 +66,22 @@ fn unmade(rule: &'static str, slug: &'static str, edge: &'static str, site: Docu
 pub fn pairs() -> Vec<Pair> {
     let lfp = || Document::run("craft_us").with("bank", "chemistry = 'lfp'; nominal = '12.8 V'");
     vec![
-        // 12 V and 10 % of it: 13.2 V. 13.3 V are 6.65 cells: highest 16 V is 2.41, cut-off 11 V 1.65 V a cell.
+        // 48 V and 10 % of it: 52.8 V. 54 V are 27 cells: highest 65 V is 2.41, cut-off 44 V 1.63 V a cell.
         Pair {
             severity: Danger,
             ..bank(
                 "R15",
                 "banks-of-unlike-voltage",
                 "banks that are joined have one nominal voltage",
-                Document::two_banks("nominal = '?'; cut_off = '11 V'; highest = '16 V'")
-                    .with("bank", "cut_off = '11 V'; highest = '16 V'"),
-                "13.1 V",
-                "13.3 V",
+                Document::two_banks(
+                    "nominal = '?'; cut_off = '44 V'; highest = '65 V'; internal_resistance = '20 mohm'",
+                )
+                .with(
+                    "bank",
+                    "nominal = '48 V'; cut_off = '44 V'; highest = '65 V'; internal_resistance = '20 mohm'",
+                ),
+                "52 V",
+                "54 V",
             )
         },
         bank(

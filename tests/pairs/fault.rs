@@ -62,10 +62,10 @@ pub fn pairs() -> Vec<Pair> {
             "5.9 kA",
             "5.8 kA",
         ),
-        // 48 V may be 16 cells: 16 × 3.65 V = 58.4 V.
+        // 48 V are 16 cells, full at 16 × 3.65 V = 58.4 V, however low the highest voltage is stated.
         breaking(
-            "breaking capacity against the most cells that a lithium bank's nominal voltage stands for",
-            lithium("54 V"),
+            "breaking capacity against the full cells that a lithium bank's nominal voltage stands for",
+            lithium("55 V"),
             "5.9 kA",
             "5.8 kA",
         ),
@@ -128,7 +128,7 @@ pub fn pairs() -> Vec<Pair> {
                 Document::run("craft_us")
                     .with(
                         "bank",
-                        "chemistry = '?'; nominal = '12.8 V'; highest = '15.4 V'; internal_resistance = none",
+                        "chemistry = '?'; highest = '15.4 V'; internal_resistance = none",
                     )
                     .with("circuit.device", "breaking = '50 kA'"),
                 "agm",

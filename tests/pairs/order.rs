@@ -10,7 +10,7 @@ use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
-use crate::badly_built::{BADLY_BUILT, HERON_POINT};
+use crate::badly_built::{BADLY_BUILT, CABIN, HERON_POINT};
 use crate::document::Document;
 
 /// Some hundred additions in another order: 1e-12 of a number, and room for differences of nearly equal ones.
@@ -111,7 +111,7 @@ proptest! {
 
     #[test]
     fn order_of_circuits_and_loads_changes_no_number(keys in prop::collection::vec(any::<u64>(), 60)) {
-        for text in [BADLY_BUILT.to_string(), HERON_POINT.to_string(), stated_heron_point()] {
+        for text in [BADLY_BUILT.to_string(), HERON_POINT.to_string(), stated_cabin()] {
             let (before, after) = (report(&text), report(&reordered(&text, &keys)));
             assert_same(&before, &after, SUMS)?;
             prop_assert_eq!(kinds(&before), kinds(&after));
@@ -119,10 +119,10 @@ proptest! {
     }
 }
 
-/// Heron Point with its design written into it.
-fn stated_heron_point() -> String {
-    let site = read(HERON_POINT).unwrap_or_else(|problems| panic!("{problems}"));
-    written_back(HERON_POINT, &site, &report(HERON_POINT))
+/// The cabin with its design written into it.
+fn stated_cabin() -> String {
+    let site = read(CABIN).unwrap_or_else(|problems| panic!("{problems}"));
+    written_back(CABIN, &site, &report(CABIN))
 }
 
 /// The document with everything that was designed written into it.
@@ -197,9 +197,9 @@ fn stud_of(site: &Stated, name: &str) -> Option<Stud> {
     banks.chain(boards).chain(inverters).chain(loads).find(|(own, _)| *own == name).and_then(|(_, stud)| stud)
 }
 
-/// Sites that leave something to be designed: the demo, and a plain run under each rule set.
+/// Sites that leave something to be designed: the cabin, and a plain run under each rule set.
 fn to_be_designed() -> Vec<String> {
-    let mut texts = vec![HERON_POINT.to_string()];
+    let mut texts = vec![CABIN.to_string()];
     for set in ["us", "iec", "craft_iso", "craft_us"] {
         let stranding = if set == "us" { "class = none" } else { "" };
         for (load, length) in [("10 A", "4 m"), ("35 A", "12 m"), ("2 A", "40 m")] {

@@ -22,6 +22,17 @@ pub struct Pair {
 }
 
 impl Pair {
+    /// A pair without other faults.
+    pub fn of(
+        severity: Severity,
+        (rule, slug): (&'static str, &'static str),
+        edge: &'static str,
+        site: Document,
+        (passing, failing): (&'static str, &'static str),
+    ) -> Self {
+        Self { rule, edge, slug, severity, site, passing, failing, also: &[] }
+    }
+
     /// The rule set; the passing twin's where the twins differ in it.
     pub fn set(&self) -> &str {
         if self.site.rules() == "?" { self.passing } else { self.site.rules() }
@@ -108,6 +119,36 @@ fn not_made(slug: &str) -> &'static str {
         "part-voltage-too-low" | "part-not-for-dc" => "part-voltage-not-stated",
         "busbar-below-sum" => "busbar-rating-not-stated",
         "lug-too-small" | "lug-too-large" => "lug-not-stated",
+        "array-voltage-too-high"
+        | "array-voltage-above-part"
+        | "array-voltage-too-low"
+        | "array-current-above-controller"
+        | "array-yield-cut"
+        | "string-device-missing"
+        | "string-device-wrong"
+        | "clamp-loses-yield" => "array-not-checked",
+        "isolator-not-load-break" | "isolator-current-too-low" => "isolator-not-stated",
+        "array-without-monitoring" => "monitoring-not-checked",
+        "charge-above-limit" | "charge-above-ceiling" | "charge-rate-low" => "charger-limit-not-stated",
+        "charge-above-limit-in-cold" => "charge-limit-in-cold-not-stated",
+        "set-point-low" | "set-point-high" | "highest-below-charging" => "set-points-not-stated",
+        "compensation-missing" | "compensation-not-for-chemistry" => "compensation-not-stated",
+        "load-dump" => "load-dump-not-stated",
+        "bank-too-small" => "capacity-not-checked",
+        "disconnect-too-low" => "disconnect-not-checked",
+        "reconnect-too-near" => "reconnect-not-stated",
+        "too-many-in-series" => "series-not-checked",
+        "strings-not-on-busbar" | "strings-share-unequally" | "string-device-too-small" => {
+            "strings-not-checked"
+        }
+        "ventilation-too-small" => "ventilation-not-stated",
+        "standing-share-high" => "standing-loads-not-stated",
+        "inverter-start-too-large" => "inverter-start-not-checked",
+        "inverter-inrush" => "inrush-not-checked",
+        "surge-protection-missing" => "surge-protection-not-stated",
+        "bonding-too-thin" => "bonding-not-checked",
+        "no-bond-point" | "several-bond-points" => "bond-points-not-stated",
+        "touch-protection-missing" => "touch-protection",
         _ => "",
     }
 }

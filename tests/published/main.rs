@@ -3,7 +3,11 @@ mod conductors;
 mod devices;
 
 mod ampacity;
+mod battery;
+mod battery_banks;
+mod battery_sharing;
 mod energy;
+mod ieee_1013;
 mod ieee_1562;
 mod law;
 mod practice;

@@ -8,7 +8,7 @@ use crate::quantity::Figures;
 /// A number with its source: a factor or a limit of a rule set, which comes into this room as a number.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Cited {
-    /// The value.
+    /// The value: a factor, or in the unit of the limit that it sets.
     pub value: f64,
     /// Its source.
     pub citation: Citation,

@@ -67,7 +67,7 @@ impl Preference {
     /// The reason in words.
     pub const fn reason(self) -> &'static str {
         match self {
-            Self::Only => "no other arrangement passes",
+            Self::Only => "no other arrangement of so many modules passes",
             Self::ParallelForShade => {
                 "parallel, since a shaded module then takes nothing from those in the sun"
             }

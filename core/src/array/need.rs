@@ -28,9 +28,9 @@ pub enum LoadClass {
 pub struct ArrayToLoad {
     /// Class.
     pub class: LoadClass,
-    /// Lower end.
+    /// Lower end; a ratio.
     pub least: f64,
-    /// Upper end, by which arrays are sized here.
+    /// Upper end, by which arrays are sized here; a ratio.
     pub most: f64,
     /// Source.
     pub citation: Citation,

@@ -1,10 +1,12 @@
 //! Cells in series behind a nominal voltage.
 
 use uom::si::electric_potential::volt;
+use uom::si::ratio::ratio;
 
 use super::Chemistry;
+use crate::catalogue::calculations;
 use crate::error::{Allowed, Error};
-use crate::quantity::ElectricPotential;
+use crate::quantity::{ElectricPotential, Ratio};
 
 /// Nominal voltages that are answered; beyond lies no low-voltage bank.
 const MOST_V: f64 = 1500.0;
@@ -13,8 +15,9 @@ const LABEL_V: f64 = 0.05;
 
 /// Number of cells in series behind a nominal voltage.
 ///
-/// Lead-acid counts 2 V a cell, nickel-cadmium 1.2 V, NMC 3.6 to 3.7 V, and the fewer cells where both would do. LFP counts 3.2 V, and the labels of the lead-acid
-/// bank that it replaces, 6 and the multiples of 12 V, count 4 cells for 12 V: 24 V are 8 cells, 48 V are 16 and not 15.
+/// Lead-acid counts 2 V a cell, nickel-cadmium 1.2 V, NMC 3.6 to 3.7 V, and the fewer cells where both would do. LFP
+/// counts 3.2 V, and the labels of the lead-acid bank that it replaces, 6 and the multiples of 12 V, count 4 cells
+/// for 12 V: 24 V are 8 cells, 48 V are 16 and not 15.
 ///
 /// # Errors
 /// [`Error::OutOfRange`] unless the voltage lies above 0 and up to 1500 V; [`Error::Contradiction`] where no whole
@@ -85,6 +88,45 @@ fn whole(volts: f64, least: f64, most: f64) -> Option<u32> {
     // At most 1500 V of 1.2 V.
     #[allow(clippy::cast_possible_truncation, clippy::cast_sign_loss)]
     fits.then_some(count as u32)
+}
+
+calculations! {
+    /// Cells in series that a system's greatest voltage admits, and what its least voltage leaves each.
+    ///
+    /// The fewest volts that a cell may be discharged to must not be above the second.
+    ///
+    /// # Example
+    /// Equipment for 21 to 32 V, flooded cells equalised at 2.6 V:
+    /// ```
+    /// use ampwright::{battery::series_cells, quantity::{parse, readable}};
+    /// let result = series_cells(parse("32 V")?, parse("2.6 V")?, parse("21 V")?)?;
+    /// assert_eq!(readable(result.cells).to_string(), "12");
+    /// assert_eq!(readable(result.end_voltage).to_string(), "1.75 V");
+    /// # Ok::<(), ampwright::Error>(())
+    /// ```
+    fn series_cells(
+        /// Greatest that the equipment bears.
+        greatest_voltage: ElectricPotential in volt [> 0.0],
+        /// Greatest to which a cell is charged, cold or equalising.
+        charge_voltage: ElectricPotential in volt [> 0.0],
+        /// Least at which the equipment works.
+        least_voltage: ElectricPotential in volt [> 0.0],
+    ) => SeriesCells {
+        /// Whole number of cells.
+        cells: Ratio in ratio,
+        /// Of each cell at the least voltage.
+        end_voltage: ElectricPotential in volt,
+    }
+    where (charge_voltage <= greatest_voltage) charge_voltage in volt: "a single cell is charged above the greatest \
+        voltage"
+    where (least_voltage < greatest_voltage) least_voltage in volt: "it must be below the greatest voltage"
+    formula "n = U_max/U_charge, rounded down to the whole; U_end = U_min/n"
+    source "IEEE Std 485 and 1013, number of cells, recalled"
+    {
+        // A quotient that is whole but for rounding counts as whole.
+        let cells = libm::floor((greatest_voltage / charge_voltage).value * (1.0 + 1e-12));
+        SeriesCells { cells: Ratio::new::<ratio>(cells), end_voltage: least_voltage / cells }
+    }
 }
 
 #[cfg(test)]

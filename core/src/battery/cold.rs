@@ -1,18 +1,15 @@
-//! Banks in the cold (R13): when the electrolyte freezes, and how long loads run while no charge is admitted.
+//! When the electrolyte of a bank freezes, and the charge that keeps it from freezing (R13).
 
 use uom::si::ratio::ratio;
 use uom::si::temperature_interval::kelvin;
 use uom::si::thermodynamic_temperature::degree_celsius;
-use uom::si::time::day;
 
 use super::charge::checked_celsius;
-use super::{Chemistry, charge_limit, data, line, rest_table};
+use super::{Chemistry, line, rest_table};
 use crate::catalogue::calculations;
 use crate::citation::{Citation, Seen};
 use crate::error::{Allowed, Error};
-use crate::quantity::{
-    ElectricCharge, Ratio, StateOfCharge, TemperatureInterval, ThermodynamicTemperature, Time,
-};
+use crate::quantity::{Ratio, StateOfCharge, TemperatureInterval, ThermodynamicTemperature};
 
 /// Source of the freezing points of sulphuric acid.
 pub const FREEZING_ACID: Citation = Citation::new(
@@ -199,10 +196,12 @@ calculations! {
         /// Part of the capacity that is left.
         state_of_charge: Ratio in ratio [0.0 ..= 1.0],
     ) -> temperature: ThermodynamicTemperature in degree_celsius
-    formula "by the straight line between rows, first the density of the charge (flooded 1.12, 1.155, 1.19, 1.225, 1.265 at 0, 25, 50, 75, 100 %; AGM 1.1 \
-        to 1.3; gel 1.1 to 1.28), then its freezing point: 1 0 °C, 1.05 −3.3, 1.1 −7.7, 1.15 −15, 1.2 −26.7, 1.225 −37.2, 1.25 −52.2, 1.28 \
-        −69 °C; nickel-cadmium about −25 °C at any charge"
-    source "freezing points of sulphuric acid by density, storage battery handbooks, recalled; potassium hydroxide recalled"
+    formula "by the straight line between rows, first the density of the charge (flooded 1.12, 1.155, 1.19, 1.225, \
+        1.265 at 0, 25, 50, 75, 100 %; AGM 1.1 to 1.3; gel 1.1 to 1.28), then its freezing point: 1 0 °C, 1.05 −3.3, \
+        1.1 −7.7, 1.15 −15, 1.2 −26.7, 1.225 −37.2, 1.25 −52.2, 1.28 −69 °C; nickel-cadmium about −25 °C at any \
+        charge"
+    source "freezing points of sulphuric acid by density, storage battery handbooks, recalled; potassium hydroxide \
+        recalled"
     fallible "the battery holds no water: lithium"
     {
         freezing_degC(chemistry, state_of_charge.value)
@@ -231,118 +230,87 @@ calculations! {
     source "as the freezing point"
     fallible "even a full battery freezes, or the battery holds no water: lithium"
     { floor_at(chemistry, temperature.get::<degree_celsius>()).map(Ratio::new::<ratio>) }
-
-    /// Days until loads alone have brought a bank down to a state of charge, while the cold admits no charge.
-    ///
-    /// # Example
-    /// 200 Ah of LFP from 90 to 10 %, of which the cold leaves 70 %, with 16 Ah a day:
-    /// ```
-    /// use ampwright::{battery::days_to_disconnect, quantity::{parse, readable}};
-    /// let result = days_to_disconnect(parse("200 Ah")?, parse("90 %")?, parse("10 %")?, parse("70 %")?, parse("16 Ah")?)?;
-    /// assert_eq!(readable(result).to_string(), "7 d");
-    /// # Ok::<(), ampwright::Error>(())
-    /// ```
-    fn days_to_disconnect(
-        /// Of the bank, rated.
-        capacity: ElectricCharge in ampere_hour [> 0.0],
-        /// At the beginning.
-        start: Ratio in ratio [0.0 ..= 1.0],
-        /// At which the loads are dropped.
-        least: Ratio in ratio [0.0 ..= 1.0],
-        /// Part of the capacity that the cold leaves.
-        cold_fraction: Ratio in ratio [> 0.0 ..= 1.0] = 1.0,
-        /// Charge that the loads take in a day.
-        daily_demand: ElectricCharge in ampere_hour [> 0.0],
-    ) -> duration: Time in day
-    where (least <= start) least in ratio: "it must not be above the start"
-    formula "t = f·C·(s₀ − s₁)/Q"
-    source "charge balance"
-    { Time::new::<day>((cold_fraction * capacity * (start - least) / daily_demand).value) }
 }
 
-/// A bank that drains while the cold may block its charge.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct ColdSpell {
-    /// Chemistry.
-    pub chemistry: Chemistry,
-    /// Rated capacity of the bank.
-    pub capacity: ElectricCharge,
-    /// State of charge at the beginning.
-    pub start: StateOfCharge,
-    /// Temperature of the cells throughout.
-    pub temperature: ThermodynamicTemperature,
-    /// Part of the capacity that the cold leaves: for lead-acid 1 over its temperature factor, else the cold fraction.
-    pub cold_fraction: Ratio,
-    /// Charge that the loads take in a day.
-    pub daily_demand: ElectricCharge,
-    /// Distance kept from the freezing point.
-    pub margin: TemperatureInterval,
-}
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use proptest::prelude::*;
 
-/// What keeps a bank from being discharged further.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum DischargeFloor {
-    /// The greatest depth of discharge of the chemistry.
-    Depth,
-    /// The electrolyte would freeze.
-    Freezing,
-}
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+    fn k(value: f64) -> TemperatureInterval {
+        TemperatureInterval::new::<kelvin>(value)
+    }
+    fn soc(part: f64) -> StateOfCharge {
+        StateOfCharge::new(part).unwrap()
+    }
 
-/// Outcome of a cold spell.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct ColdSpellOutcome {
-    /// Whether the chemistry admits any charge at this temperature: if so, the spell is no spell.
-    pub charge_admitted: bool,
-    /// State of charge at which the loads must be dropped.
-    pub floor: StateOfCharge,
-    /// What sets it.
-    pub floor_by: DischargeFloor,
-    /// Charge that the loads get until then; nought where the bank begins below the floor.
-    pub usable: ElectricCharge,
-    /// Time until then.
-    pub until_disconnect: Time,
-}
+    #[test]
+    fn acid_freezes_the_later_the_fuller_it_is() {
+        for chemistry in [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel] {
+            let mut last = 1.0;
+            for percent in 0..=100 {
+                let now = freezing_degC(chemistry, f64::from(percent) / 100.0).unwrap();
+                assert!(now <= last && now < 0.0, "{chemistry}, {percent} %");
+                last = now;
+            }
+        }
+        assert_eq!(freezes(Chemistry::Lfp, soc(0.0), at(-40.0), k(5.0)), Ok(None));
+    }
 
-/// How long loads run on a bank while the cold blocks its charge, and what ends it (R13).
-///
-/// # Errors
-/// [`Error::OutOfRange`] where a quantity is NaN, infinite or not above nought; [`Error::TableEnds`] where even a full
-/// battery does not keep the margin from freezing.
-///
-/// # Example
-/// A telemetry mast on AGM at −20 °C: the freezing of acid, not the depth, ends its discharge.
-/// ```
-/// use ampwright::battery::{Chemistry, ColdSpell, DischargeFloor, cold_spell};
-/// use ampwright::quantity::{StateOfCharge, parse, readable};
-/// let outcome = cold_spell(&ColdSpell {
-///     chemistry: Chemistry::Agm,
-///     capacity: parse("100 Ah")?,
-///     start: StateOfCharge::new(1.0)?,
-///     temperature: parse("-20 degC")?,
-///     cold_fraction: parse("50 %")?,
-///     daily_demand: parse("5 Ah")?,
-///     margin: parse("5 K")?,
-/// })?;
-/// assert_eq!(outcome.floor_by, DischargeFloor::Freezing);
-/// assert_eq!(readable(outcome.until_disconnect).to_string(), "5.36 d");
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn cold_spell(spell: &ColdSpell) -> Result<ColdSpellOutcome, Error> {
-    let charge_admitted = charge_limit(spell.chemistry, spell.temperature)?.usual.get() > 0.0;
-    let deepest = 1.0 - data(spell.chemistry).greatest_depth.value;
-    let freezing = freezing_floor(spell.chemistry, spell.temperature, spell.margin)?;
-    let (floor, floor_by) = match freezing {
-        Some(freezing) if freezing.get() > deepest => (freezing, DischargeFloor::Freezing),
-        _ => (StateOfCharge::new(deepest)?, DischargeFloor::Depth),
-    };
-    let least = if floor < spell.start { floor } else { spell.start };
-    let until_disconnect = days_to_disconnect(
-        spell.capacity,
-        Ratio::new::<ratio>(spell.start.get()),
-        Ratio::new::<ratio>(least.get()),
-        spell.cold_fraction,
-        spell.daily_demand,
-    )?;
-    let usable = spell.cold_fraction * spell.capacity * (spell.start.get() - least.get());
-    Ok(ColdSpellOutcome { charge_admitted, floor, floor_by, usable, until_disconnect })
+    /// The table is bent one way between its rows, so that a straight line lies below it: by less than the margin.
+    #[test]
+    fn the_margin_covers_the_line_between_rows() {
+        for w in ACID.windows(4) {
+            let line = |a: (f64, f64), b: (f64, f64), x: f64| a.1 + (b.1 - a.1) * (x - a.0) / (b.0 - a.0);
+            for part in 1..20 {
+                let x = w[1].0 + (w[2].0 - w[1].0) * f64::from(part) / 20.0;
+                // The rows before, drawn on, freeze at a higher temperature than a curve that bends downward.
+                let within = line(w[1], w[2], x) - line(w[0], w[1], x).max(line(w[2], w[3], x));
+                assert!(within < FREEZING_MARGIN_K, "{x}: {within} K");
+            }
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn at_the_floor_the_margin_is_kept_and_just_below_it_is_not(
+            place in 0usize..3, celsius in -60.0..10.0f64, margin in 0.0..8.0f64,
+        ) {
+            let chemistry = [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel][place];
+            let Ok(Some(floor)) = freezing_floor(chemistry, at(celsius), k(margin)) else {
+                let full = freezes(chemistry, soc(1.0), at(celsius), k(margin)).unwrap();
+                prop_assert_eq!(full, Some(true), "refused, though a full battery keeps the margin");
+                return Ok(());
+            };
+            let left = |charge| freezing_margin(chemistry, soc(charge), at(celsius)).unwrap().unwrap().value;
+            prop_assert!(left(floor.get()) >= margin - 1e-9);
+            prop_assert!(floor.get() == 0.0 || left(floor.get() - 1e-4) < margin);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(a: u64, b: u64, c: u64) {
+            let [a, b, c] = [a, b, c].map(f64::from_bits);
+            for chemistry in Chemistry::ALL {
+                let _ = freezing_floor(chemistry, at(a), k(b));
+                let _ = freezes(chemistry, soc(0.5), at(a), k(c));
+            }
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn the_formula_names_the_figures_of_the_tables() {
+        let formula = ENTRIES.iter().find(|e| e.name == "freezing_point").unwrap().formula;
+        for (density, below) in ACID {
+            let sign = if below > 0.0 { "−" } else { "" };
+            assert!(formula.contains(&std::format!("{density} {sign}{below}")), "{density}");
+        }
+        for rows in Chemistry::ALL.iter().filter_map(|c| rest_table(*c).density) {
+            assert!(rows.value.iter().all(|(_, density)| formula.contains(&std::format!("{density}"))));
+        }
+    }
 }

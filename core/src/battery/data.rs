@@ -4,12 +4,8 @@
 //! [`cell_set_points`](super::cell_set_points), rest voltages in [`rest_table`](super::rest_table). General figures
 //! all: what the maker of a battery states governs.
 
-use uom::si::thermodynamic_temperature::degree_celsius;
-
-use super::{Chemistry, line};
+use super::Chemistry;
 use crate::citation::{Citation, Seen};
-use crate::error::{Allowed, Error};
-use crate::quantity::{Ratio, StateOfCharge, ThermodynamicTemperature};
 
 /// A value and where it comes from.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -97,7 +93,6 @@ const CYCLE_TABLE: Citation = Citation::new(
 const WELLS: Citation =
     Citation::new("common practice, no source", "fits usual hour-rate capacities", Seen::Practice);
 const LFP_PAGES: Citation = Citation::new("cell data sheets", "LFP discharge limits", Seen::Page);
-const NICKEL_STANDARD: Citation = Citation::new("IEC 60623", "", Seen::Recalled);
 
 const fn wells(available_ratio: f64, rate_per_h: f64) -> Datum<KineticParameters> {
     datum(KineticParameters { available_ratio, rate_per_h }, WELLS)
@@ -199,7 +194,7 @@ const LFP: ChemistryData = ChemistryData {
     storage_degC: datum((-20.0, 45.0), SHEETS),
     discharge_degC: datum((-20.0, 60.0), LFP_PAGES),
     peukert: datum((1.01, 1.05), EXPONENTS),
-    kinetic: wells(0.9, 4.0),
+    kinetic: wells(0.95, 0.5),
     cycles: datum(&LFP_CYCLES, CYCLE_TABLE),
     drop_V_h: datum(0.12, PRACTICE),
     vented: datum(false, HANDBOOK),
@@ -221,7 +216,7 @@ const NMC: ChemistryData = ChemistryData {
     storage_degC: datum((-20.0, 45.0), SHEETS),
     discharge_degC: datum((-20.0, 60.0), SHEETS),
     peukert: datum((1.01, 1.08), EXPONENTS),
-    kinetic: wells(0.85, 4.0),
+    kinetic: wells(0.93, 0.5),
     cycles: datum(&NMC_CYCLES, CYCLE_TABLE),
     drop_V_h: datum(0.15, PRACTICE),
     vented: datum(false, HANDBOOK),
@@ -238,13 +233,10 @@ const NICKEL_CADMIUM: ChemistryData = ChemistryData {
     charge_efficiency: datum(0.8, STORAGE),
     energy_efficiency: datum(0.65, HANDBOOK),
     self_discharge_per_month: datum(0.1, HANDBOOK),
-    end_of_life: datum(
-        0.8,
-        Citation::new("IEEE Std 1106", "replacement at 80 % of capacity", Seen::Recalled),
-    ),
+    end_of_life: datum(0.8, PRACTICE),
     cold_capacity: datum(&NICKEL_COLD, SHEETS),
     storage_degC: datum((-40.0, 50.0), HANDBOOK),
-    discharge_degC: datum((-20.0, 45.0), NICKEL_STANDARD),
+    discharge_degC: datum((-20.0, 45.0), HANDBOOK),
     peukert: datum((1.05, 1.2), EXPONENTS),
     kinetic: wells(0.5, 1.5),
     cycles: datum(&NICKEL_CYCLES, HANDBOOK),
@@ -272,126 +264,74 @@ pub const fn data(chemistry: Chemistry) -> &'static ChemistryData {
     }
 }
 
-/// Part of the capacity at 25 °C that a lithium or nickel-cadmium battery gives at a temperature.
-///
-/// By the straight line between the rows of [`ChemistryData::cold_capacity`]; above 25 °C no more than the whole.
-///
-/// # Errors
-/// [`Error::OutOfRange`] for NaN; [`Error::TableEnds`] below the coldest row, where no discharge is admitted either;
-/// [`Error::NotTabulated`] for lead-acid, which takes [`temperature_factor()`](super::temperature_factor()).
-///
-/// # Example
-/// ```
-/// # use ampwright::battery::{Chemistry, cold_fraction};
-/// # use ampwright::quantity::parse;
-/// assert_eq!(cold_fraction(Chemistry::Lfp, parse("-10 degC")?)?.value.value, 0.7);
-/// assert!(cold_fraction(Chemistry::Lfp, parse("-30 degC")?).is_err());
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn cold_fraction(
-    chemistry: Chemistry,
-    temperature: ThermodynamicTemperature,
-) -> Result<Datum<Ratio>, Error> {
-    let celsius = super::charge::checked_celsius(temperature)?;
-    let Datum { value: rows, citation } = data(chemistry).cold_capacity;
-    let Some(first) = rows.first() else {
-        return Err(Error::NotTabulated {
-            what: "the capacity of a lead-acid battery over temperature",
-            table: citation,
-            remedy: "take its temperature factor, which a standard tabulates",
-        });
-    };
-    if celsius < first.0 {
-        return Err(Error::TableEnds {
-            what: "cell temperature",
-            value: celsius,
-            unit: "degC",
-            table: citation,
-            end: "begins at -20 degC",
-            remedy: "keep the bank warmer, or state the maker's capacity there",
-        });
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::battery::{charge_bands, discharge_limit, is_within};
+    use crate::quantity::ThermodynamicTemperature;
+    use uom::si::thermodynamic_temperature::degree_celsius;
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
     }
-    Ok(datum(Ratio::new::<uom::si::ratio::ratio>(line::held(rows, celsius)), citation))
-}
 
-/// By how much a cell's resistance differs from that of the same cell full, at 25 °C and new.
-///
-/// From [`resistance_rise`](super::resistance_rise): in proportion to the depth of discharge, and exponential in
-/// temperature through 1 at 25 °C and its figure at −10 °C. Common practice, no source; for wiring and disconnect
-/// voltages, not for measurement.
-///
-/// # Errors
-/// [`Error::OutOfRange`] if the temperature is NaN or outside −60 … 100 °C.
-///
-/// # Example
-/// ```
-/// # use ampwright::battery::{Chemistry, resistance_factor};
-/// # use ampwright::quantity::{StateOfCharge, parse};
-/// let empty_and_cold = resistance_factor(Chemistry::Agm, StateOfCharge::new(0.0)?, parse("-10 degC")?)?;
-/// assert!((empty_and_cold.value - 3.0).abs() < 1e-12);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn resistance_factor(
-    chemistry: Chemistry,
-    charge: StateOfCharge,
-    temperature: ThermodynamicTemperature,
-) -> Result<Ratio, Error> {
-    let celsius = super::charge::checked_celsius(temperature)?;
-    Ok(Ratio::new::<uom::si::ratio::ratio>(resistance_factor_at(chemistry, charge.get(), celsius)))
-}
-
-pub(super) fn resistance_factor_at(chemistry: Chemistry, charge: f64, celsius: f64) -> f64 {
-    let rise = super::resistance_rise(chemistry);
-    let depth = 1.0 + (rise.discharged - 1.0) * (1.0 - charge);
-    depth * libm::pow(rise.cold, (25.0 - celsius) / 35.0)
-}
-
-/// Years until a battery is worn out by age alone at a mean temperature.
-///
-/// [`ChemistryData::life_years`], halved with every [`ChemistryData::life_halving_K`] above 25 °C; below, no longer.
-///
-/// # Errors
-/// [`Error::OutOfRange`] if the temperature is NaN or outside −60 … 100 °C.
-///
-/// # Example
-/// ```
-/// # use ampwright::battery::{Chemistry, life_years};
-/// # use ampwright::quantity::parse;
-/// assert_eq!(life_years(Chemistry::Flooded, parse("35 degC")?)?, 4.0);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn life_years(chemistry: Chemistry, temperature: ThermodynamicTemperature) -> Result<f64, Error> {
-    let celsius = super::charge::checked_celsius(temperature)?;
-    let data = data(chemistry);
-    let above = (celsius - 25.0).max(0.0);
-    Ok(data.life_years.value * libm::pow(0.5, above / data.life_halving_K.value))
-}
-
-/// Whether a temperature lies within a pair of limits of [`ChemistryData`], both included.
-///
-/// # Errors
-/// [`Error::OutOfRange`] if the temperature is NaN or infinite.
-///
-/// # Example
-/// ```
-/// # use ampwright::battery::{Chemistry, data, is_within};
-/// # use ampwright::quantity::parse;
-/// assert!(!is_within(data(Chemistry::Lfp).storage_degC, parse("-30 degC")?)?);
-/// # Ok::<(), ampwright::Error>(())
-/// ```
-pub fn is_within(
-    limits_degC: Datum<(f64, f64)>,
-    temperature: ThermodynamicTemperature,
-) -> Result<bool, Error> {
-    let celsius = temperature.get::<degree_celsius>();
-    if !celsius.is_finite() {
-        return Err(Error::OutOfRange {
-            name: "cell temperature",
-            value: celsius,
-            unit: "degC",
-            allowed: Allowed::Finite,
-        });
+    fn parts(held: &ChemistryData) -> [f64; 7] {
+        [
+            held.greatest_depth.value,
+            held.usual_depth.value,
+            held.daily_depth.value,
+            held.charge_efficiency.value,
+            held.energy_efficiency.value,
+            held.self_discharge_per_month.value,
+            held.end_of_life.value,
+        ]
     }
-    let (least, most) = limits_degC.value;
-    Ok(celsius >= least && celsius <= most)
+
+    #[test]
+    fn each_part_is_one_and_each_limit_is_in_order() {
+        for chemistry in Chemistry::ALL {
+            let held = data(chemistry);
+            assert_eq!(held.chemistry, chemistry);
+            assert!(parts(held).iter().all(|part| *part > 0.0 && *part <= 1.0), "{chemistry}");
+            assert!(held.daily_depth.value <= held.usual_depth.value, "{chemistry}");
+            assert!(held.usual_depth.value <= held.greatest_depth.value, "{chemistry}");
+            // Energy is lost with the charge, and to resistance besides.
+            assert!(held.energy_efficiency.value < held.charge_efficiency.value, "{chemistry}");
+            for (least, most) in [held.storage_degC.value, held.discharge_degC.value, held.peukert.value] {
+                assert!(least < most, "{chemistry}");
+            }
+            assert!(held.peukert.value.0 >= 1.0 && held.life_years.value >= 1.0, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn one_figure_stands_in_one_place_or_in_two_that_agree() {
+        use uom::si::electric_potential::volt;
+        for chemistry in Chemistry::ALL {
+            let held = data(chemistry);
+            assert_eq!(held.nominal_cell_V.value, chemistry.nominal_cell().get::<volt>());
+            // Where a rate of discharge is held, it ends where these limits do.
+            let (least, most) = held.discharge_degC.value;
+            for (celsius, admitted) in
+                [(least, true), (most, true), (least - 0.1, false), (most + 0.1, false)]
+            {
+                if let Some((rate, _)) = discharge_limit(chemistry, at(celsius)).unwrap() {
+                    assert_eq!(rate.get() > 0.0, admitted, "{chemistry} at {celsius}");
+                }
+                assert_eq!(is_within(held.discharge_degC, at(celsius)), Ok(admitted));
+            }
+            // Whoever charges a bank may discharge it, too.
+            let bands = charge_bands(chemistry);
+            assert!(bands[0].from_degC >= least && bands[bands.len() - 1].upto_degC <= most, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn a_recalled_cycle_table_falls_with_depth_but_not_faster_than_charge_moved() {
+        for chemistry in Chemistry::ALL {
+            for pair in data(chemistry).cycles.value.windows(2) {
+                assert!(pair[0].0 < pair[1].0 && pair[0].1 > pair[1].1, "{chemistry}");
+            }
+        }
+    }
 }

@@ -6,7 +6,7 @@ use uom::si::temperature_interval::kelvin;
 
 use super::charge::checked_celsius;
 use super::cold::{FREEZING_MARGIN_K, freezing_floor};
-use super::data::resistance_factor_at;
+use super::factors::resistance_factor_at;
 use super::set_points::checked_cells;
 use super::{Chemistry, DischargeFloor, cell_voltages, data, line, rest_table};
 use crate::catalogue::calculations;
@@ -53,9 +53,9 @@ pub struct Disconnect {
 
 /// Disconnect and reconnect voltages of a bank, fit for chemistry, current and freezing (R14).
 ///
-/// The loads are dropped at the greatest depth of discharge of the chemistry, or earlier where the electrolyte would come
-/// within [`FREEZING_MARGIN_K`] of freezing. The voltage is that of the charge at rest, less its fall under the load, but
-/// never below the least that a cell bears ([`cell_voltages`]).
+/// The loads are dropped at the greatest depth of discharge of the chemistry, or earlier where the electrolyte would
+/// come within [`FREEZING_MARGIN_K`] of freezing. The voltage is that of the charge at rest, less its fall under the
+/// load, but never below the least that a cell bears ([`cell_voltages`]).
 ///
 /// | input | unit | valid |
 /// | --- | --- | --- |
@@ -64,8 +64,8 @@ pub struct Disconnect {
 /// | `temperature` | °C | −60 … 100; lowest of the cells |
 ///
 /// # Errors
-/// [`Error::OutOfRange`] if the temperature is NaN or out of range, or there are no cells; [`Error::TableEnds`] where even
-/// a full battery does not keep the margin from freezing.
+/// [`Error::OutOfRange`] if the temperature is NaN or out of range, or there are no cells; [`Error::TableEnds`] where
+/// even a full battery does not keep the margin from freezing.
 ///
 /// # Source
 /// Rest voltages as [`rest_table`]; the fall under load and the reconnect voltages are common practice, no source.
@@ -113,8 +113,8 @@ pub fn disconnect(
 calculations! {
     /// Voltages at which the loads of a bank are dropped and taken back.
     ///
-    /// See [`disconnect`] for what they rest on. A setting in a device counts at its own terminals: take the drop of the cable
-    /// between off.
+    /// See [`disconnect`] for what they rest on. A setting in a device counts at its own terminals: take the drop of
+    /// the cable between off.
     ///
     /// # Example
     /// ```
@@ -141,10 +141,11 @@ calculations! {
         /// State of charge at which they are dropped.
         state_of_charge: Ratio in ratio,
     }
-    formula "disconnect = n·max(U₀(s) − r·k·(1 + (a − 1)(1 − s))·b^((25 °C − t)/35 K), least of a cell); s the greater of one less the greatest \
-        depth (lead-acid 0.8, others 0.9) and the least that keeps 5 K from freezing; k in V·h: flooded 0.4, AGM 0.25, gel 0.3, LFP 0.12, NMC \
-        0.15, nickel-cadmium 0.2; a and b the rise of resistance discharged and cold; reconnect = n·max(2.1, 2.12, 2.12, 3.32, 3.75, 1.32 V; \
-        U₀(s) + 2.5 % of nominal)"
+    formula "disconnect = n·max(U₀(s) − r·k·(1 + (a − 1)(1 − s))·b^((25 °C − t)/35 K), least of a cell); s the \
+        greater of one less the greatest depth (lead-acid 0.8, others 0.9) and the least that keeps 5 K from \
+        freezing; k in V·h: flooded 0.4, AGM 0.25, gel 0.3, LFP 0.12, NMC 0.15, nickel-cadmium 0.2; a and b the rise \
+        of resistance discharged and cold; reconnect = n·max(2.1, 2.12, 2.12, 3.32, 3.75, 1.32 V; U₀(s) + 2.5 % of \
+        nominal)"
     source "rest voltages by table; fall under load and reconnect voltages are common practice, no source"
     fallible "even a full battery comes within 5 K of freezing"
     {
@@ -155,5 +156,81 @@ calculations! {
             reconnect: found.reconnect,
             state_of_charge: Ratio::new::<ratio>(found.floor.get()),
         })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use proptest::prelude::*;
+    use uom::si::thermodynamic_temperature::degree_celsius;
+
+    fn found(chemistry: Chemistry, rate: f64, celsius: f64) -> Result<Disconnect, Error> {
+        let temperature = ThermodynamicTemperature::new::<degree_celsius>(celsius);
+        disconnect(chemistry, 1, ChargeRate::per_hour(rate)?, temperature)
+    }
+
+    proptest! {
+        #[test]
+        fn more_current_lowers_it_and_it_stays_within_what_a_cell_bears(
+            place in 0usize..6, rate in 0.0..2.0f64, more in 0.0..2.0f64, celsius in -20.0..50.0f64,
+        ) {
+            let chemistry = Chemistry::ALL[place];
+            let slow = found(chemistry, rate, celsius).unwrap();
+            let fast = found(chemistry, rate + more, celsius).unwrap();
+            prop_assert!(fast.disconnect <= slow.disconnect && fast.floor == slow.floor);
+            prop_assert!(fast.disconnect.value >= cell_voltages(chemistry).empty_V);
+            prop_assert!(slow.disconnect <= slow.at_rest && slow.at_rest < slow.reconnect);
+            // Reconnect is reached by charging.
+            let charged = super::super::set_points::cell_set_points(chemistry).absorption_V.0;
+            prop_assert!(slow.reconnect.value < charged, "{chemistry}: {:?}", slow.reconnect);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(celsius: u64, rate in 0.0..1000.0f64, cells: u32) {
+            let temperature = ThermodynamicTemperature::new::<degree_celsius>(f64::from_bits(celsius));
+            for chemistry in Chemistry::ALL {
+                if let Ok(found) = disconnect(chemistry, cells, ChargeRate::per_hour(rate).unwrap(), temperature) {
+                    prop_assert!(found.disconnect.value.is_finite() && found.reconnect > found.disconnect);
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn frost_raises_the_state_of_charge_at_which_loads_are_dropped() {
+        let warm = found(Chemistry::Flooded, 0.05, 20.0).unwrap();
+        let cold = found(Chemistry::Flooded, 0.05, -20.0).unwrap();
+        assert_eq!((warm.floor_by, cold.floor_by), (DischargeFloor::Depth, DischargeFloor::Freezing));
+        assert!(cold.floor.get() > 0.5 && cold.at_rest > warm.at_rest);
+        assert_eq!(found(Chemistry::Flooded, 0.05, -55.0).unwrap().floor_by, DischargeFloor::Freezing);
+        assert_eq!(found(Chemistry::NickelCadmium, 0.05, -24.0).unwrap_err().slug(), "table-ends");
+        assert_eq!(found(Chemistry::Lfp, 0.05, -20.0).unwrap().floor_by, DischargeFloor::Depth);
+    }
+
+    #[test]
+    fn the_entry_is_the_function() {
+        for chemistry in Chemistry::ALL {
+            let rate = ChargeRate::per_hour(0.1).unwrap();
+            let temperature = ThermodynamicTemperature::new::<degree_celsius>(0.0);
+            let whole = disconnect(chemistry, 8, rate, temperature).unwrap();
+            let entry = disconnect_voltage(chemistry, Ratio::new::<ratio>(8.0), rate, temperature).unwrap();
+            assert_eq!((entry.disconnect, entry.reconnect), (whole.disconnect, whole.reconnect));
+            assert_eq!(entry.state_of_charge.value, whole.floor.get());
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn the_formula_names_the_figures_of_the_tables() {
+        for chemistry in Chemistry::ALL {
+            for figure in
+                [data(chemistry).drop_V_h.value, reconnect_V(chemistry), data(chemistry).greatest_depth.value]
+            {
+                assert!(ENTRIES[0].formula.contains(&std::format!("{figure}")), "{chemistry}: {figure}");
+            }
+        }
+        assert!(ENTRIES[0].formula.contains(&std::format!("{FREEZING_MARGIN_K} K")));
     }
 }

@@ -104,7 +104,7 @@ calculations! {
 /// By how much a bank's resistance rises from full, warm and new to the state of the least prospective current.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct ResistanceRise {
-    /// Empty against full.
+    /// Empty against full; a factor, as the two below.
     pub discharged: f64,
     /// At about −10 °C against 25 °C.
     pub cold: f64,

@@ -1,7 +1,7 @@
 //! The kinetic battery model: two wells of charge, of which only one can be drawn from at once.
 //!
-//! What is bound flows over at a rate of its own: a fast discharge empties the available well while charge is left, and a
-//! rest brings some back. Losses, temperature and age are not in it.
+//! What is bound flows over at a rate of its own: a fast discharge empties the available well while charge is left,
+//! and a rest brings some back. Losses, temperature and age are not in it.
 
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
@@ -11,7 +11,7 @@ use uom::si::time::hour;
 use super::{Chemistry, KineticParameters, data};
 use crate::catalogue::calculations;
 use crate::error::{Allowed, Error};
-use crate::quantity::{ChargeRate, ElectricCharge, ElectricCurrent, Ratio, Time};
+use crate::quantity::{ChargeRate, ElectricCharge, ElectricCurrent, Ratio, StateOfCharge, Time};
 
 /// A battery as two wells.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -46,8 +46,8 @@ impl Kinetic {
     /// k′ is that of the step equations, k/(c(1 − c)) where k couples the heights of the wells.
     ///
     /// # Errors
-    /// [`Error::OutOfRange`] unless the capacity is above nought and finite, the part above 0 and below 1, and the rate above
-    /// nought.
+    /// [`Error::OutOfRange`] unless the capacity is above nought and finite, the part above 0 and below 1, and the
+    /// rate above nought.
     pub fn new(capacity: ElectricCharge, available: Ratio, rate: ChargeRate) -> Result<Self, Error> {
         let (capacity_Ah, c, k) = (capacity.get::<ampere_hour>(), available.get::<ratio>(), rate.get());
         let refuse = |name, value, unit, allowed| Err(Error::OutOfRange { name, value, unit, allowed });
@@ -91,13 +91,27 @@ impl Kinetic {
         ElectricCharge::new::<ampere_hour>(self.capacity_Ah)
     }
 
-    /// Both wells full.
-    pub fn full(&self) -> Wells {
-        self.at_rest(1.0)
+    /// Part of it in the available well, c.
+    pub fn available(&self) -> Ratio {
+        Ratio::new::<ratio>(self.c)
     }
 
-    /// Both wells at one height, at a part of the charge.
-    fn at_rest(&self, part: f64) -> Wells {
+    /// Rate constant k′ of the step equations.
+    pub fn rate(&self) -> ChargeRate {
+        ChargeRate::unchecked(self.k)
+    }
+
+    /// Both wells full.
+    pub fn full(&self) -> Wells {
+        self.wells(1.0)
+    }
+
+    /// Both wells at one height, as after a long rest.
+    pub fn at_rest(&self, charge: StateOfCharge) -> Wells {
+        self.wells(charge.get())
+    }
+
+    fn wells(&self, part: f64) -> Wells {
         Wells {
             available: ElectricCharge::new::<ampere_hour>(self.c * self.capacity_Ah * part),
             bound: ElectricCharge::new::<ampere_hour>((1.0 - self.c) * self.capacity_Ah * part),
@@ -106,8 +120,8 @@ impl Kinetic {
 
     /// The wells after a constant current, positive in discharge, over a time.
     ///
-    /// The closed form of the model, exact for any length of step. The available well may come out below nought or above
-    /// its brim: [`Kinetic::max_discharge`] and [`Kinetic::max_charge`] tell what keeps it within.
+    /// The closed form of the model, exact for any length of step. The available well may come out below nought or
+    /// above its brim: [`Kinetic::max_discharge`] and [`Kinetic::max_charge`] tell what keeps it within.
     ///
     /// # Errors
     /// [`Error::OutOfRange`] where an input is NaN or infinite or the time negative.
@@ -206,7 +220,7 @@ const LEAST_PART: f64 = 1e-3;
 const LEAST_RATE: f64 = 1e-4;
 
 /// 1 − e^−x, and x − that: both without loss for small x.
-fn exponentials(x: f64) -> (f64, f64) {
+pub(super) fn exponentials(x: f64) -> (f64, f64) {
     let gone = -libm::expm1(-x);
     // x − 1 + e^−x loses its digits below: its series, to the bit at 0.01.
     let lag =
@@ -215,7 +229,7 @@ fn exponentials(x: f64) -> (f64, f64) {
 }
 
 /// Capacity at an hour rate, part of that of a very slow discharge.
-fn hour_rate_part(c: f64, k: f64, hours: f64) -> f64 {
+pub(super) fn hour_rate_part(c: f64, k: f64, hours: f64) -> f64 {
     let x = k * hours;
     let (gone, lag) = exponentials(x);
     c * x / (gone + c * lag)
@@ -303,4 +317,154 @@ calculations! {
     formula "Q = C·c·x/(1 − e^−x + c·(x − 1 + e^−x)), x = k′·t"
     source "Manwell and McGowan, Solar Energy 50 (1993) 399 (recalled)"
     { capacity * hour_rate_part(available.value, rate.get(), duration.get::<hour>()) }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    fn model(capacity: f64, c: f64, k: f64) -> Kinetic {
+        let whole = ElectricCharge::new::<ampere_hour>(capacity);
+        Kinetic::new(whole, Ratio::new::<ratio>(c), ChargeRate::per_hour(k).unwrap()).unwrap()
+    }
+    fn a(value: f64) -> ElectricCurrent {
+        ElectricCurrent::new::<ampere>(value)
+    }
+    fn h(value: f64) -> Time {
+        Time::new::<hour>(value)
+    }
+    fn ah(charge: ElectricCharge) -> f64 {
+        charge.get::<ampere_hour>()
+    }
+
+    /// The differential equations of the wells, in steps of Runge and Kutta: another way to the closed form.
+    fn integrated(model: Kinetic, wells: Wells, amperes: f64, hours: f64) -> (f64, f64) {
+        let rate = |q1: f64, q2: f64| {
+            let flow = model.k * model.c * (1.0 - model.c) * (q2 / (1.0 - model.c) - q1 / model.c);
+            (-amperes + flow, -flow)
+        };
+        let (mut q1, mut q2) = (ah(wells.available), ah(wells.bound));
+        let steps = 400;
+        let dt = hours / f64::from(steps);
+        for _ in 0..steps {
+            let (a1, b1) = rate(q1, q2);
+            let (a2, b2) = rate(q1 + 0.5 * dt * a1, q2 + 0.5 * dt * b1);
+            let (a3, b3) = rate(q1 + 0.5 * dt * a2, q2 + 0.5 * dt * b2);
+            let (a4, b4) = rate(q1 + dt * a3, q2 + dt * b3);
+            q1 += dt * (a1 + 2.0 * a2 + 2.0 * a3 + a4) / 6.0;
+            q2 += dt * (b1 + 2.0 * b2 + 2.0 * b3 + b4) / 6.0;
+        }
+        (q1, q2)
+    }
+
+    proptest! {
+        #[test]
+        fn the_closed_form_is_the_integral(
+            c in 0.05..0.95f64, k in 0.05..5.0f64, part in 0.1..1.0f64, amperes in -20.0..20.0f64, hours in 0.0..3.0f64,
+        ) {
+            let model = model(100.0, c, k);
+            let start = model.wells(part);
+            let end = model.step(start, a(amperes), h(hours)).unwrap();
+            let (q1, q2) = integrated(model, start, amperes, hours);
+            prop_assert!((ah(end.available) - q1).abs() < 1e-6 && (ah(end.bound) - q2).abs() < 1e-6);
+            // No charge is lost.
+            prop_assert!((ah(end.total()) - ah(start.total()) + amperes * hours).abs() < 1e-9);
+        }
+
+        #[test]
+        fn a_step_is_the_sum_of_its_parts(
+            c in 0.01..0.99f64, k in 0.001..20.0f64, amperes in -50.0..50.0f64, first in 0.0..5.0f64, then in 0.0..5.0f64,
+        ) {
+            let model = model(300.0, c, k);
+            let whole = model.step(model.full(), a(amperes), h(first + then)).unwrap();
+            let parts = model.step(model.step(model.full(), a(amperes), h(first)).unwrap(), a(amperes), h(then)).unwrap();
+            prop_assert!((ah(whole.available) - ah(parts.available)).abs() < 1e-8);
+            prop_assert!((ah(whole.bound) - ah(parts.bound)).abs() < 1e-8);
+        }
+
+        #[test]
+        fn the_limits_just_empty_and_just_fill(
+            c in 0.05..0.95f64, k in 0.01..10.0f64, part in 0.05..0.95f64, hours in 0.01..10.0f64,
+        ) {
+            let model = model(200.0, c, k);
+            let start = model.wells(part);
+            let out = model.max_discharge(start, h(hours)).unwrap();
+            prop_assert!(ah(model.step(start, out, h(hours)).unwrap().available).abs() < 1e-8);
+            let into = model.max_charge(start, h(hours)).unwrap();
+            let filled = model.step(start, -into, h(hours)).unwrap();
+            prop_assert!((ah(filled.available) - 200.0 * c).abs() < 1e-8 && into.value > 0.0);
+            // The time to empty is that of the limit.
+            let time = model.time_to_empty(start, out, h(2.0 * hours)).unwrap().unwrap();
+            prop_assert!((time.get::<hour>() - hours).abs() < 1e-7 * hours);
+        }
+
+        #[test]
+        fn a_faster_discharge_gives_less_and_lasts_as_its_hour_rate(
+            c in 0.05..0.95f64, k in 0.01..10.0f64, hours in 0.1..200.0f64, less in 0.1..0.99f64,
+        ) {
+            let slow = hour_rate_part(c, k, hours);
+            prop_assert!(slow <= 1.0 && hour_rate_part(c, k, hours * less) <= slow && slow >= c);
+            // Two ways to one number: the capacity at an hour rate, and the lifetime at the current of that rate.
+            let whole = ElectricCharge::new::<ampere_hour>(100.0);
+            let (part, rate) = (Ratio::new::<ratio>(c), ChargeRate::per_hour(k).unwrap());
+            let life = kinetic_lifetime(whole, part, rate, a(100.0 * slow / hours)).unwrap();
+            prop_assert!((life.get::<hour>() - hours).abs() < 1e-7 * hours);
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(bits: [u64; 6]) {
+            let [capacity, c, available, bound, amperes, hours] = bits.map(f64::from_bits);
+            let charge = |x| ElectricCharge::new::<ampere_hour>(x);
+            let rate = ChargeRate::per_hour(1.2).unwrap();
+            let wells = Wells { available: charge(available), bound: charge(bound) };
+            let _ = Kinetic::new(charge(capacity), Ratio::new::<ratio>(c), rate);
+            let model = model(100.0, 0.3, 1.2);
+            let _ = model.step(wells, a(amperes), h(hours));
+            let _ = (model.max_discharge(wells, h(hours)), model.max_charge(wells, h(hours)));
+            let _ = model.time_to_empty(wells, a(amperes), h(hours));
+            let _ = Kinetic::of_chemistry(Chemistry::Agm, charge(capacity), h(hours));
+        }
+    }
+
+    #[test]
+    fn a_rest_brings_charge_back_but_makes_none() {
+        let model = model(100.0, 0.3, 1.2);
+        let tired = model.step(model.full(), a(30.0), h(0.8)).unwrap();
+        let rested = model.step(tired, a(0.0), h(2.0)).unwrap();
+        assert!(rested.available > tired.available && rested.bound < tired.bound);
+        assert!((ah(rested.total()) - ah(tired.total())).abs() < 1e-12);
+        let long = model.step(tired, a(0.0), h(1000.0)).unwrap();
+        let even = model.at_rest(StateOfCharge::new(ah(tired.total()) / 100.0).unwrap());
+        assert!((ah(long.available) - ah(even.available)).abs() < 1e-9);
+    }
+
+    #[test]
+    fn a_step_of_no_time_moves_nothing_and_has_no_limit() {
+        let model = model(100.0, 0.3, 1.2);
+        let same = model.step(model.full(), a(50.0), h(0.0)).unwrap();
+        assert_eq!(
+            (ah(same.available), ah(same.bound)),
+            (ah(model.full().available), ah(model.full().bound))
+        );
+        assert!(model.max_discharge(model.full(), h(0.0)).is_err());
+        assert_eq!(model.time_to_empty(model.full(), a(-5.0), h(10.0)), Ok(None));
+    }
+
+    /// Chosen so that they agree with the recalled range of exponents: that is what their source says.
+    #[test]
+    fn parameters_of_each_chemistry_give_its_usual_peukert_exponent() {
+        for chemistry in Chemistry::ALL {
+            let KineticParameters { available_ratio: c, rate_per_h: k } = data(chemistry).kinetic.value;
+            let (c20, c5) = (hour_rate_part(c, k, 20.0), hour_rate_part(c, k, 5.0));
+            let exponent = libm::log(4.0) / libm::log((c5 / 5.0) / (c20 / 20.0));
+            let (low, high) = data(chemistry).peukert.value;
+            assert!((low..=high).contains(&exponent), "{chemistry}: {exponent}");
+            // A rating comes back as the capacity of both wells at its hour rate.
+            let rated = ElectricCharge::new::<ampere_hour>(100.0);
+            let model = Kinetic::of_chemistry(chemistry, rated, h(20.0)).unwrap();
+            let again = kinetic_capacity(model.capacity(), model.available(), model.rate(), h(20.0)).unwrap();
+            assert!((ah(again) - 100.0).abs() < 1e-9);
+        }
+    }
 }

@@ -36,6 +36,12 @@ pub(super) fn reached(rows: &[(f64, f64)], y: f64) -> f64 {
     }
 }
 
+/// A temperature as it was printed: through kelvin and back it has lost its last digits, and a table's edge would be
+/// missed.
+pub(super) fn printed(celsius: f64) -> f64 {
+    libm::round(celsius * 1e9) / 1e9
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -38,8 +38,8 @@ pub struct CellSetPoints {
 const HANDBOOK: Citation = Citation::new("common handbook values", "lead-acid charge voltages", Seen::Page);
 const SHEETS: Citation = Citation::new("typical cell data sheets", "charge voltage", Seen::Recalled);
 const NICKEL: Citation = Citation::new("common handbook values", "vented nickel-cadmium", Seen::Recalled);
-/// 0.028 V per cell per 10 °F, which is 5.04 mV/K, in one maker's FAQ; 5.0 mV/K from a maker of gel batteries. Handbooks
-/// give 3 to 5 mV/K.
+/// 0.028 V per cell per 10 °F, which is 5.04 mV/K, in one maker's FAQ; 5.0 mV/K from a maker of gel batteries.
+/// Handbooks give 3 to 5 mV/K.
 const LEAD_ACID_COMPENSATION: Citation =
     Citation::new("two battery makers' figures", "5 mV/K a cell", Seen::Page);
 const UNCOMPENSATED: Citation = Citation::new("typical cell data sheets", "no compensation", Seen::Recalled);
@@ -271,8 +271,8 @@ calculations! {
         /// Of the cells, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.435 V, AGM 2.415 V, gel 2.375 V, each \
-        −5 mV/K; LFP 3.525 V, NMC 4.125 V, both 0; nickel-cadmium 1.525 V, −3 mV/K"
+    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.435 V, AGM 2.415 \
+        V, gel 2.375 V, each −5 mV/K; LFP 3.525 V, NMC 4.125 V, both 0; nickel-cadmium 1.525 V, −3 mV/K"
     source "lead-acid: the middle of usual handbook ranges, and two makers' compensation; the rest recalled"
     {
         let cell = cell_set_points(chemistry);
@@ -297,8 +297,8 @@ calculations! {
         /// Of the cells, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.235 V, AGM and gel 2.275 V, each \
-        −5 mV/K; LFP 3.35 V, 0; nickel-cadmium 1.425 V, −3 mV/K"
+    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.235 V, AGM and \
+        gel 2.275 V, each −5 mV/K; LFP 3.35 V, 0; nickel-cadmium 1.425 V, −3 mV/K"
     source "lead-acid: the middle of usual handbook ranges, and two makers' compensation; the rest recalled"
     fallible "the chemistry is not held at a float voltage: NMC"
     {
@@ -325,8 +325,8 @@ calculations! {
         /// Of the cells, not of the air.
         temperature: ThermodynamicTemperature in degree_celsius [-60.0 ..= 100.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.585 V, AGM 2.475 V, gel 2.4 V (its \
-        absorption: no more), each −5 mV/K; nickel-cadmium 1.625 V, −3 mV/K"
+    formula "U = n·(U₂₅ + k·(t − 25 °C)), t held between −20 and 50 °C; U₂₅ a cell and k: flooded 2.585 V, AGM 2.475 \
+        V, gel 2.4 V (its absorption: no more), each −5 mV/K; nickel-cadmium 1.625 V, −3 mV/K"
     source "lead-acid: the middle of usual handbook ranges, and two makers' compensation; the rest recalled"
     fallible "the chemistry takes no equalisation: lithium"
     {
@@ -343,7 +343,8 @@ calculations! {
     /// 14.6 V at 80 °F for six flooded cells, of 5.04 mV/K each, are more at 70 °F:
     /// ```
     /// use ampwright::{battery::compensated_voltage, quantity::{parse, readable}};
-    /// let result = compensated_voltage(parse("14.6 V")?, parse("6")?, parse("-5.04 mV/K")?, parse("80 degF")?, parse("70 degF")?)?;
+    /// let (stated, coefficient) = (parse("14.6 V")?, parse("-5.04 mV/K")?);
+    /// let result = compensated_voltage(stated, parse("6")?, coefficient, parse("80 degF")?, parse("70 degF")?)?;
     /// assert_eq!(readable(result).to_string(), "14.77 V");
     /// # Ok::<(), ampwright::Error>(())
     /// ```
@@ -376,4 +377,111 @@ calculations! {
 /// ```
 pub const fn compensation(chemistry: Chemistry) -> VoltagePerTemperature {
     volts_per_kelvin(cell_set_points(chemistry).compensation_V_per_K)
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use crate::battery::{cell_voltages, fault_voltage};
+
+    fn at(celsius: f64) -> ThermodynamicTemperature {
+        ThermodynamicTemperature::new::<degree_celsius>(celsius)
+    }
+
+    #[test]
+    fn float_lies_below_absorption_and_absorption_below_equalisation() {
+        for chemistry in Chemistry::ALL {
+            let points = set_points(chemistry, 4, at(25.0)).unwrap();
+            assert!(points.absorption.low < points.absorption.high, "{chemistry}");
+            if let Some(float) = points.float {
+                assert!(float.low < float.high && float.high <= points.absorption.high, "{chemistry}");
+                assert!(float.usual() < points.absorption.usual());
+            }
+            if let Some(equalise) = points.equalise {
+                assert!(equalise.low <= equalise.high && equalise.usual() > points.absorption.usual());
+            }
+            // Charging lies above rest, and above the least that makes a charge plausible.
+            let cell = cell_set_points(chemistry);
+            assert!(cell.absorption_V.0 >= cell_voltages(chemistry).charge_V, "{chemistry}");
+            assert!(cell.absorption_V.1 > fault_voltage(chemistry).least_V, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn compensation_runs_with_the_cold_and_stands_still_at_its_ends() {
+        for chemistry in Chemistry::ALL {
+            let voltage = |celsius| set_points(chemistry, 6, at(celsius)).unwrap().greatest().get::<volt>();
+            assert!(voltage(0.0) >= voltage(25.0) && voltage(25.0) >= voltage(40.0), "{chemistry}");
+            assert_eq!((voltage(-20.0), voltage(50.0)), (voltage(-45.0), voltage(90.0)), "{chemistry}");
+            let steps = 6.0 * cell_set_points(chemistry).compensation_V_per_K;
+            assert!((voltage(35.0) - voltage(25.0) - 10.0 * steps).abs() < 1e-12, "{chemistry}");
+        }
+    }
+
+    #[test]
+    fn a_stated_voltage_is_judged_and_nan_never_passes() {
+        let range = set_points(Chemistry::Flooded, 1, at(25.0)).unwrap().absorption;
+        let standing = |v: f64| range.standing(ElectricPotential::new::<volt>(v));
+        assert_eq!(
+            [2.39, 2.4, 2.45, 2.47, 2.48].map(standing),
+            [Standing::Below, Standing::Within, Standing::Within, Standing::Within, Standing::Above]
+        );
+        assert_eq!(standing(f64::NAN), Standing::NotANumber);
+        assert_eq!(
+            (standing(f64::INFINITY), standing(f64::NEG_INFINITY)),
+            (Standing::Above, Standing::Below)
+        );
+    }
+
+    #[test]
+    fn the_entries_are_the_middle_of_the_ranges() {
+        for chemistry in Chemistry::ALL {
+            for celsius in [-30.0, 0.0, 25.0, 60.0] {
+                let points = set_points(chemistry, 12, at(celsius)).unwrap();
+                let twelve = Ratio::new::<uom::si::ratio::ratio>(12.0);
+                let close = |a: ElectricPotential, b: ElectricPotential| assert!((a - b).value.abs() < 1e-12);
+                close(absorption_voltage(chemistry, twelve, at(celsius)).unwrap(), points.absorption.usual());
+                match points.float {
+                    Some(float) => {
+                        close(float_voltage(chemistry, twelve, at(celsius)).unwrap(), float.usual());
+                    }
+                    None => assert!(float_voltage(chemistry, twelve, at(celsius)).is_err()),
+                }
+                match points.equalise {
+                    Some(range) => {
+                        close(equalising_voltage(chemistry, twelve, at(celsius)).unwrap(), range.usual());
+                    }
+                    None => assert!(equalising_voltage(chemistry, twelve, at(celsius)).is_err()),
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn no_cells_and_no_temperature_are_refused() {
+        assert!(set_points(Chemistry::Agm, 0, at(25.0)).is_err());
+        for odd in [f64::NAN, f64::INFINITY, -61.0, 101.0] {
+            assert!(set_points(Chemistry::Agm, 6, at(odd)).is_err());
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the table.
+    #[test]
+    fn formulas_name_the_figures_of_the_table() {
+        let named = |entry: &str, volts: f64| {
+            let formula = ENTRIES.iter().find(|e| e.name == entry).unwrap().formula;
+            assert!(formula.contains(&std::format!("{} V", (1e4 * volts).round() / 1e4)), "{entry}: {volts}");
+        };
+        for chemistry in Chemistry::ALL {
+            let cell = cell_set_points(chemistry);
+            named("absorption_voltage", middle(cell.absorption_V));
+            if let Some(float) = cell.float_V {
+                named("float_voltage", middle(float));
+            }
+            if let Some(equalise) = cell.equalise_V {
+                named("equalising_voltage", middle(equalise));
+            }
+        }
+    }
 }

@@ -2,154 +2,14 @@
 
 use uom::si::electric_potential::volt;
 use uom::si::ratio::ratio;
-use uom::si::time::hour;
 
+use super::rest::FLOODED_DENSITY;
 use super::set_points::checked_cells;
-use super::{Chemistry, Datum, line};
+use super::{Chemistry, line, rest_table};
 use crate::catalogue::calculations;
-use crate::citation::{Citation, Seen};
+use crate::citation::Citation;
 use crate::error::{Allowed, Error};
-use crate::quantity::{ElectricPotential, Ratio, StateOfCharge, ThermodynamicTemperature, Time};
-
-const COUNCIL: Citation =
-    Citation::new("battery council table, widely reprinted", "rest voltage and relative density", Seen::Page);
-const SEALED: Citation =
-    Citation::new("common handbook values", "rest voltage, valve-regulated", Seen::Recalled);
-const CURVES: Citation = Citation::new("typical published curves", "rest voltage", Seen::Recalled);
-const STRONGER: Citation =
-    Citation::new("common handbook values", "relative density, valve-regulated", Seen::Recalled);
-const REST: Citation = Citation::new("common practice, no source", "rest before a reading", Seen::Practice);
-
-// (state of charge, V a cell), emptiest first.
-const FLOODED: [(f64, f64); 5] = [(0.0, 1.982), (0.25, 2.01), (0.5, 2.04), (0.75, 2.075), (1.0, 2.108)];
-const AGM: [(f64, f64); 5] = [(0.0, 1.967), (0.25, 2.0), (0.5, 2.05), (0.75, 2.1), (1.0, 2.133)];
-const GEL: [(f64, f64); 5] = [(0.0, 1.967), (0.25, 2.0), (0.5, 2.058), (0.75, 2.108), (1.0, 2.142)];
-const LFP: [(f64, f64); 12] = [
-    (0.0, 2.5),
-    (0.05, 3.05),
-    (0.1, 3.18),
-    (0.2, 3.23),
-    (0.3, 3.26),
-    (0.4, 3.28),
-    (0.5, 3.29),
-    (0.6, 3.3),
-    (0.7, 3.31),
-    (0.8, 3.33),
-    (0.9, 3.34),
-    (1.0, 3.4),
-];
-const NMC: [(f64, f64); 12] = [
-    (0.0, 3.0),
-    (0.05, 3.35),
-    (0.1, 3.45),
-    (0.2, 3.55),
-    (0.3, 3.61),
-    (0.4, 3.66),
-    (0.5, 3.7),
-    (0.6, 3.78),
-    (0.7, 3.87),
-    (0.8, 3.95),
-    (0.9, 4.05),
-    (1.0, 4.18),
-];
-const NICKEL: [(f64, f64); 6] = [(0.0, 1.1), (0.1, 1.2), (0.2, 1.24), (0.5, 1.27), (0.8, 1.3), (1.0, 1.35)];
-
-// (state of charge, relative density at about 25 °C), emptiest first.
-const FLOODED_DENSITY: [(f64, f64); 5] =
-    [(0.0, 1.12), (0.25, 1.155), (0.5, 1.19), (0.75, 1.225), (1.0, 1.265)];
-const AGM_DENSITY: [(f64, f64); 2] = [(0.0, 1.1), (1.0, 1.3)];
-const GEL_DENSITY: [(f64, f64); 2] = [(0.0, 1.1), (1.0, 1.28)];
-
-/// What is held about readings of a chemistry at rest.
-#[derive(Clone, Copy, Debug, PartialEq)]
-#[allow(non_snake_case)]
-pub struct RestTable {
-    /// Rest voltage of a cell at about 25 °C, (state of charge, V), emptiest first.
-    pub voltage_V: Datum<&'static [(f64, f64)]>,
-    /// By how much sources or makers differ from it, V a cell.
-    pub spread_V: Datum<f64>,
-    /// Relative density of the electrolyte at about 25 °C, (state of charge, density), emptiest first; `None` where the
-    /// electrolyte takes no part in the reaction or is no liquid of that kind.
-    pub density: Option<Datum<&'static [(f64, f64)]>>,
-    /// Time without charge and load before a voltage is one at rest, hours.
-    pub rest_h: Datum<f64>,
-}
-
-const fn of<T: Copy>(value: T, citation: Citation) -> Datum<T> {
-    Datum { value, citation }
-}
-
-const FLOODED_REST: RestTable = RestTable {
-    voltage_V: of(&FLOODED, COUNCIL),
-    // Another source, page seen, is higher by 0.06 to 0.09 V for six cells at and below half charge.
-    spread_V: of(
-        0.015,
-        Citation::new("vehicle magazine, technical answers", "rest voltage bands", Seen::Page),
-    ),
-    density: Some(of(&FLOODED_DENSITY, COUNCIL)),
-    rest_h: of(6.0, REST),
-};
-const AGM_REST: RestTable = RestTable {
-    voltage_V: of(&AGM, SEALED),
-    spread_V: of(0.02, SEALED),
-    density: Some(of(&AGM_DENSITY, STRONGER)),
-    rest_h: of(6.0, REST),
-};
-const GEL_REST: RestTable = RestTable {
-    voltage_V: of(&GEL, SEALED),
-    spread_V: of(0.02, SEALED),
-    density: Some(of(&GEL_DENSITY, STRONGER)),
-    rest_h: of(6.0, REST),
-};
-const LFP_REST: RestTable = RestTable {
-    voltage_V: of(&LFP, CURVES),
-    spread_V: of(0.02, CURVES),
-    density: None,
-    rest_h: of(2.0, REST),
-};
-const NMC_REST: RestTable = RestTable {
-    voltage_V: of(&NMC, CURVES),
-    spread_V: of(0.02, CURVES),
-    density: None,
-    rest_h: of(2.0, REST),
-};
-const NICKEL_REST: RestTable = RestTable {
-    voltage_V: of(&NICKEL, CURVES),
-    spread_V: of(0.03, CURVES),
-    density: None,
-    rest_h: of(12.0, REST),
-};
-
-/// Rest voltages and densities of a chemistry.
-///
-/// Flooded equals `lead-acid-ocv-soc-flooded`, LFP `lfp-ocv-soc-typical` in `tests/reference/battery.toml` (tested there);
-/// the rest recalled.
-///
-/// ```
-/// # use ampwright::battery::{Chemistry, rest_table};
-/// assert_eq!(rest_table(Chemistry::Flooded).voltage_V.value.last(), Some(&(1.0, 2.108)));
-/// ```
-pub const fn rest_table(chemistry: Chemistry) -> &'static RestTable {
-    match chemistry {
-        Chemistry::Flooded => &FLOODED_REST,
-        Chemistry::Agm => &AGM_REST,
-        Chemistry::Gel => &GEL_REST,
-        Chemistry::Lfp => &LFP_REST,
-        Chemistry::Nmc => &NMC_REST,
-        Chemistry::NickelCadmium => &NICKEL_REST,
-    }
-}
-
-/// Time without charge and load before a bank's voltage is one at rest.
-///
-/// ```
-/// # use ampwright::battery::{Chemistry, rest_time};
-/// # use ampwright::quantity::readable;
-/// assert_eq!(readable(rest_time(Chemistry::Flooded)).to_string(), "6 h");
-/// ```
-pub fn rest_time(chemistry: Chemistry) -> Time {
-    Time::new::<hour>(rest_table(chemistry).rest_h.value)
-}
+use crate::quantity::{ElectricPotential, Ratio, StateOfCharge, ThermodynamicTemperature};
 
 /// States of charge that a reading is consistent with.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -158,6 +18,8 @@ pub struct ChargeRange {
     pub least: StateOfCharge,
     /// Greatest.
     pub greatest: StateOfCharge,
+    /// Whether any of them lies on the curve's plateau, [`RestTable::plateau`](super::RestTable::plateau).
+    pub on_plateau: bool,
     /// Source of the curve.
     pub citation: Citation,
 }
@@ -166,11 +28,11 @@ impl ChargeRange {
     /// Width beyond which a reading tells too little to act on.
     const USABLE: f64 = 0.3;
 
-    /// The middle, where the reading is a usable gauge: where it leaves no more than 30 % of the capacity open. Common
-    /// practice, no source.
+    /// The middle, where the reading is a usable gauge: off the plateau, and where it leaves no more than 30 % of the
+    /// capacity open. Common practice, no source.
     pub fn estimate(&self) -> Option<StateOfCharge> {
         let (least, greatest) = (self.least.get(), self.greatest.get());
-        if greatest - least > Self::USABLE {
+        if self.on_plateau || greatest - least > Self::USABLE {
             return None;
         }
         StateOfCharge::new(0.5 * (least + greatest)).ok()
@@ -237,9 +99,12 @@ pub fn state_of_charge(
             "that is far below an empty battery at rest: a cell has failed, or the number of cells is another",
         );
     }
+    let least = StateOfCharge::new(line::reached(rows, cell - open))?;
+    let greatest = StateOfCharge::new(line::reached(rows, cell + open))?;
     Ok(ChargeRange {
-        least: StateOfCharge::new(line::reached(rows, cell - open))?,
-        greatest: StateOfCharge::new(line::reached(rows, cell + open))?,
+        least,
+        greatest,
+        on_plateau: table.plateau.is_some_and(|(from, to)| greatest.get() > from && least.get() < to),
         citation: table.voltage_V.citation,
     })
 }
@@ -282,9 +147,9 @@ calculations! {
         /// Part of the capacity that is left.
         state_of_charge: Ratio in ratio [0.0 ..= 1.0],
     ) -> voltage: ElectricPotential in volt
-    formula "U = n·U₀(s), U₀ by the straight line between rows, at 0, 25, 50, 75 and 100 %: flooded 1.982, 2.01, 2.04, 2.075, 2.108 V; AGM 1.967, \
-        2, 2.05, 2.1, 2.133 V; gel 1.967, 2, 2.058, 2.108, 2.142 V; LFP, NMC and nickel-cadmium by rows of their own, at half charge \
-        3.29, 3.7 and 1.27 V"
+    formula "U = n·U₀(s), U₀ by the straight line between rows, at 0, 25, 50, 75 and 100 %: flooded 1.982, 2.01, \
+        2.04, 2.075, 2.108 V; AGM 1.967, 2, 2.05, 2.1, 2.133 V; gel 1.967, 2, 2.058, 2.108, 2.142 V; LFP, NMC and \
+        nickel-cadmium by rows of their own, at half charge 3.29, 3.7 and 1.27 V"
     source "flooded: a battery council's table, page seen; LFP: a typical curve, recalled; the rest recalled"
     {
         let cell = line::held(rest_table(chemistry).voltage_V.value, state_of_charge.value);
@@ -319,8 +184,8 @@ calculations! {
         /// Greatest that is consistent with the reading.
         greatest: Ratio in ratio,
     }
-    formula "s where U₀(s) = U/n ∓ (e/n + spread), U₀ as for the rest voltage; spread a cell: flooded 15 mV, AGM, gel, LFP and NMC 20 mV, \
-        nickel-cadmium 30 mV"
+    formula "s where U₀(s) = U/n ∓ (e/n + spread), U₀ as for the rest voltage; spread a cell: flooded 15 mV, AGM, \
+        gel, LFP and NMC 20 mV, nickel-cadmium 30 mV"
     source "as the rest voltage; the spread of flooded is that between two sources, the others recalled"
     fallible "the voltage is above that of a full battery at rest, or far below that of an empty one"
     {
@@ -370,7 +235,106 @@ calculations! {
         /// At about 25 °C, see [`relative_density_at_reference()`].
         density: Ratio in ratio [1.0 ..= 1.4],
     ) -> state_of_charge: Ratio in ratio
-    formula "the straight line between rows: 1.12 is 0, 1.155 is 0.25, 1.19 is 0.5, 1.225 is 0.75, 1.265 is 1; beyond the ends 0 and 1"
+    formula "the straight line between rows: 1.12 is 0, 1.155 is 0.25, 1.19 is 0.5, 1.225 is 0.75, 1.265 is 1; \
+        beyond the ends 0 and 1"
     source "battery council table, page seen; for electrolyte of 1.265 when full"
     { Ratio::new::<ratio>(line::reached(&FLOODED_DENSITY, density.value)) }
+}
+
+#[cfg(test)]
+mod tests {
+    extern crate std;
+    use super::*;
+    use proptest::prelude::*;
+
+    fn v(volts: f64) -> ElectricPotential {
+        ElectricPotential::new::<volt>(volts)
+    }
+
+    #[test]
+    fn tables_rise_with_charge() {
+        for chemistry in Chemistry::ALL {
+            let table = rest_table(chemistry);
+            for rows in [Some(table.voltage_V), table.density].into_iter().flatten() {
+                assert_eq!((rows.value[0].0, rows.value[rows.value.len() - 1].0), (0.0, 1.0), "{chemistry}");
+                assert!(rows.value.windows(2).all(|w| w[0].0 < w[1].0 && w[0].1 < w[1].1), "{chemistry}");
+            }
+            assert_eq!(table.density.is_some(), chemistry.is_lead_acid());
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn the_true_state_of_charge_is_never_left_out(
+            place in 0usize..6, cells in 1u32..30, charge in 0.0..=1.0f64, error in -0.05..0.05f64,
+        ) {
+            let chemistry = Chemistry::ALL[place];
+            let one = line::held(rest_table(chemistry).voltage_V.value, charge);
+            // A meter that is wrong by no more than it says, and a cell that differs by no more than the spread.
+            let reading = f64::from(cells) * (one + 0.99 * rest_table(chemistry).spread_V.value) + error;
+            let found = state_of_charge(chemistry, cells, v(reading), v(0.05)).unwrap();
+            prop_assert!(found.least.get() <= charge + 1e-9 && charge <= found.greatest.get() + 1e-9, "{found:?}");
+        }
+
+        #[test]
+        fn any_bits_give_an_answer_or_an_error(voltage: u64, error: u64, cells: u32) {
+            for chemistry in Chemistry::ALL {
+                let read = state_of_charge(chemistry, cells, v(f64::from_bits(voltage)), v(f64::from_bits(error)));
+                if let Ok(range) = read {
+                    prop_assert!(range.least <= range.greatest);
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn the_plateau_of_lfp_is_no_gauge_and_its_ends_are() {
+        let estimate = |volts| state_of_charge(Chemistry::Lfp, 4, v(volts), v(0.02)).unwrap().estimate();
+        for plateau in [13.1, 13.15, 13.2, 13.25, 13.3] {
+            assert_eq!(estimate(plateau), None, "{plateau} V");
+        }
+        for (volts, least, most) in [(12.0, 0.0, 0.1), (12.7, 0.0, 0.2), (13.55, 0.9, 1.0)] {
+            let found = estimate(volts).unwrap().get();
+            assert!((least..=most).contains(&found), "{volts} V: {found}");
+        }
+    }
+
+    #[test]
+    fn a_reading_under_charge_and_a_dead_cell_are_named() {
+        let told = |volts| state_of_charge(Chemistry::Flooded, 6, v(volts), v(0.02)).unwrap_err();
+        assert!(matches!(told(14.2), Error::Contradiction { why, .. } if why.contains("let it rest")));
+        assert!(matches!(told(10.3), Error::Contradiction { why, .. } if why.contains("a cell has failed")));
+        assert!(state_of_charge(Chemistry::Flooded, 0, v(12.5), v(0.0)).is_err());
+        assert!(state_of_charge(Chemistry::Flooded, 6, v(12.5), v(-0.1)).is_err());
+    }
+
+    #[test]
+    fn density_and_charge_go_there_and_back() {
+        for percent in 0..=100 {
+            let charge = StateOfCharge::new(f64::from(percent) / 100.0).unwrap();
+            let density = relative_density(Chemistry::Flooded, charge).unwrap();
+            let back = state_of_charge_from_density(density).unwrap().value;
+            assert!((back - charge.get()).abs() < 1e-12, "{percent} %");
+        }
+    }
+
+    /// The faces print the formula: its figures are those of the tables.
+    #[test]
+    fn formulas_name_the_figures_of_the_tables() {
+        let of = |name: &str| ENTRIES.iter().find(|e| e.name == name).unwrap().formula;
+        for chemistry in [Chemistry::Flooded, Chemistry::Agm, Chemistry::Gel] {
+            for (_, volts) in rest_table(chemistry).voltage_V.value {
+                assert!(of("rest_voltage").contains(&std::format!("{volts}")), "{chemistry}: {volts}");
+            }
+        }
+        for chemistry in Chemistry::ALL {
+            let spread = std::format!("{} mV", 1e3 * rest_table(chemistry).spread_V.value);
+            assert!(of("state_of_charge_from_voltage").contains(&spread), "{chemistry}: {spread}");
+            let half = line::held(rest_table(chemistry).voltage_V.value, 0.5);
+            assert!(of("rest_voltage").contains(&std::format!("{half}")), "{chemistry}: {half}");
+        }
+        for (charge, density) in FLOODED_DENSITY {
+            assert!(of("state_of_charge_from_density").contains(&std::format!("{density} is {charge}")));
+        }
+    }
 }

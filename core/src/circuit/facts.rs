@@ -206,12 +206,26 @@ impl Facts<'_> {
                 "current while it starts, seconds at most, against the least that trips the breaker at once",
                 device.family.data().source.recalled(),
             ),
-            None => Checked::plain(
-                Check::DeviceStart,
-                Outcome::NotChecked,
-                "start or surge above the device's rating: compare with its time-current curve, which is not held",
-                own("R16"),
-            ),
+            None => match device.family.non_operating_ratio(device.rating) {
+                // What it carries for an hour it carries for the seconds of a start.
+                Some(multiple) if total.get::<ampere>() <= multiple * device.rating.get::<ampere>() => {
+                    Checked::at_most(
+                        Check::DeviceStart,
+                        total.get::<ampere>(),
+                        multiple * device.rating.get::<ampere>(),
+                        "A",
+                        "current while it starts against that on which the device must not open within its \
+                         conventional time (1 h to 4 h)",
+                        device.family.data().source.recalled(),
+                    )
+                }
+                _ => Checked::plain(
+                    Check::DeviceStart,
+                    Outcome::NotChecked,
+                    "start or surge above the device's rating: compare with its time-current curve, which is not held",
+                    own("R16"),
+                ),
+            },
         })
     }
 

@@ -142,7 +142,7 @@ pub fn size_run(run: &Run, conductors: &[Conductor], offers: &[Offer<'_>]) -> Re
 }
 
 /// Least rating of a family that carries what a run draws, and rides through its start: a breaker must not trip at
-/// once, a fuse's curve is not held.
+/// once, a fuse must carry the start for good, since its curve is not held.
 pub fn device_need(run: &Run, judged: &Judgement, family: Family, full_rated: bool) -> ElectricCurrent {
     let data = family.data();
     let carries = Ratio::new::<ratio>(data.continuous_ratio);
@@ -153,6 +153,12 @@ pub fn device_need(run: &Run, judged: &Judgement, family: Family, full_rated: bo
         (Some((lower, _)), Some(extra)) => {
             let start = (judged.current + extra) / lower;
             if start > need { start } else { need }
+        }
+        // The curves between are not held: it is chosen so that it carries the start as long as it likes.
+        (None, Some(extra)) => {
+            let start = judged.current + extra;
+            let ridden = family.non_operating_ratio(start).map_or(need, |multiple| start / multiple);
+            if ridden > need { ridden } else { need }
         }
         _ => need,
     }

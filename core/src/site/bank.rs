@@ -3,7 +3,7 @@
 use uom::si::electric_potential::volt;
 use uom::si::electrical_resistance::ohm;
 
-use super::system::BankEntry;
+use super::system::{BankEntry, FeedKind};
 use crate::battery::{Chemistry, fault_voltage, resistance_rise, short_circuit_estimate};
 use crate::network::Source;
 use crate::quantity::{ElectricPotential, ElectricalResistance};
@@ -84,5 +84,7 @@ fn limited(feed: &BankEntry) -> Ends {
         .limit
         .filter(|limit| limit.value > 0.0)
         .map(|limit| Source { emf: feed.highest, resistance: feed.highest / limit });
-    Ends { strongest: source, weakest: source, by_thumb: false }
+    // In weak light an array drives next to nothing.
+    let weakest = source.filter(|_| !matches!(feed.kind, FeedKind::Array(_)));
+    Ends { strongest: source, weakest, by_thumb: false }
 }

@@ -8,17 +8,22 @@ use alloc::string::{String, ToString};
 use alloc::vec::Vec;
 use core::fmt;
 
+use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 use uom::si::length::meter;
+use uom::si::power::watt;
 use uom::si::ratio::percent;
 
 use super::finding::{Finding, digits};
+use super::lines::{ArrayLine, BankLine, Step};
+use super::plant_text::MONTHS;
 use super::reading::{ReadingLine, Verdict};
 use super::report::{CircuitLine, Report};
 use super::sheet::Purchase;
 use super::text::{conductor_words, device_words, is_of_device, printable};
 use crate::circuit::Outcome;
+use crate::quantity::{ElectricCharge, ElectricPotential};
 use crate::rules::Check;
 
 /// One thing that differs between two reports.
@@ -125,18 +130,21 @@ impl Report {
     /// # Example
     /// ```
     /// use ampwright::site::{inspect, read};
-    /// let before = include_str!("../../examples/sites/heron_point.toml");
-    /// let after = before.replace("power = \"110 W\"", "power = \"220 W\"");
+    /// let before = include_str!("../../examples/sites/badly_built.toml");
+    /// let after = before.replacen("one_way = \"40 m\"", "one_way = \"30 m\"", 1);
     /// let report = |text: &str| inspect(&read(text).map_err(|p| p.to_string())?).map_err(|p| p.to_string());
     /// let (earlier, later) = (report(before)?, report(&after)?);
     /// assert!(earlier.compare(&earlier).is_empty());
-    /// let changes = later.compare(&earlier);
-    /// assert!(changes.circuits.iter().any(|c| c.place == "circuit \"pump\"" && c.what == "current"));
+    /// assert!(later.compare(&earlier).circuits.iter().any(|c| c.what == "drop"));
     /// # Ok::<(), String>(())
     /// ```
     pub fn compare(&self, earlier: &Self) -> Comparison {
         Comparison {
-            system: system(earlier, self),
+            system: {
+                let mut changes = system(earlier, self);
+                changes.extend(plant(earlier, self));
+                changes
+            },
             circuits: circuits(earlier, self),
             findings: matched(&earlier.findings, &self.findings, finding_key, |f| Value {
                 text: format!("{} {}", f.severity.word(), f.text),
@@ -239,8 +247,11 @@ fn verdict(line: &ReadingLine) -> Value {
 
 fn bought(purchase: &Purchase) -> Value {
     let price = purchase.price.map_or_else(String::new, |p| format!(", {p:.2}"));
-    let text =
-        format!("{} {} for {}{price}", digits(purchase.amount), purchase.unit, purchase.places.join(", "));
+    let places = match purchase.places.as_slice() {
+        [] => String::new(),
+        places => format!(" for {}", places.join(", ")),
+    };
+    let text = format!("{} {}{places}{price}", digits(purchase.amount), purchase.unit);
     Value { text, why: String::new() }
 }
 
@@ -249,8 +260,11 @@ fn with_reason(change: Change, earlier: &Report, later: &Report) -> Change {
     let of = |report: &Report| {
         let purchase = report.purchases.iter().find(|p| p.what == change.place && p.unit == change.what)?;
         purchase.places.iter().find_map(|place| {
-            let circuit = report.circuits.iter().find(|c| c.name == *place)?;
-            Some(format!("\"{}\": {}", circuit.name, circuit.governing))
+            let circuit = report.circuits.iter().find(|c| c.name == *place);
+            let of_circuit = circuit.map(|c| format!("\"{}\": {}", c.name, c.governing));
+            let of_bank = || report.plant.banks.iter().find(|b| b.name == *place).map(needed);
+            let of_array = || report.plant.arrays.iter().find(|a| a.name == *place).map(reached);
+            of_circuit.or_else(of_bank).or_else(of_array)
         })
     };
     let (why_earlier, why_later) = (of(earlier).unwrap_or_default(), of(later).unwrap_or_default());
@@ -282,6 +296,71 @@ fn system(earlier: &Report, later: &Report) -> Vec<Change> {
     let key = |(place, _): &(String, Value)| (place.clone(), String::new());
     let value = |(_, value): &(String, Value)| Value { text: value.text.clone(), why: value.why.clone() };
     matched(&lines(earlier), &lines(later), key, value)
+}
+
+/// Banks, arrays, inverters and sources as they are laid out, with the step of their sizing that decided last.
+fn plant(earlier: &Report, later: &Report) -> Vec<Change> {
+    let key = |(place, what, _): &Fact| (place.clone(), (*what).to_string());
+    let value = |(_, _, value): &Fact| Value { text: value.text.clone(), why: value.why.clone() };
+    matched(&laid_out(earlier), &laid_out(later), key, value)
+}
+
+/// Place, what of it, and its value.
+type Fact = (String, &'static str, Value);
+
+/// What the bank was sized for.
+fn needed(bank: &BankLine) -> String {
+    let ah = |q: ElectricCharge| digits(q.get::<ampere_hour>());
+    bank.needed
+        .map_or_else(String::new, |q| format!("{} Ah are needed, {} Ah are there", ah(q), ah(bank.capacity)))
+}
+
+/// What the array was sized for.
+fn reached(array: &ArrayLine) -> String {
+    let month = array.worst_month.and_then(|m| MONTHS.get(m));
+    month.zip(array.reached).map_or_else(String::new, |(month, part)| {
+        format!("in {month}, its worst month, it gives {:.0} % of what is needed", part.get::<percent>())
+    })
+}
+
+fn laid_out(report: &Report) -> Vec<Fact> {
+    let decided = |steps: &[Step]| {
+        steps.last().map_or_else(String::new, |s| format!("{}: {} {}", s.what, digits(s.value), s.unit))
+    };
+    let volts = |v: Option<ElectricPotential>| {
+        v.map_or_else(|| "not known".to_string(), |v| format!("{} V", digits(v.get::<volt>())))
+    };
+    let mut facts = Vec::new();
+    for b in &report.plant.banks {
+        let place = format!("bank \"{}\"", b.name);
+        let series = b.series.map_or_else(String::new, |s| format!("{s} in series, "));
+        let battery = b.battery.as_ref().map_or_else(String::new, |name| format!(" of {name}"));
+        let text = format!("{series}{} in parallel{battery}", b.strings);
+        facts.push((place.clone(), "layout", Value { text, why: needed(b) }));
+        let text = format!("{}, back at {}", volts(b.disconnect), volts(b.reconnect));
+        facts.push((place, "disconnect", Value { text, why: String::new() }));
+    }
+    for a in &report.plant.arrays {
+        let place = format!("array \"{}\"", a.name);
+        let text = format!("{} in series, {} in parallel of {}", a.series, a.strings, a.module);
+        facts.push((place.clone(), "layout", Value { text, why: reached(a) }));
+        facts.push((
+            place,
+            "cold open-circuit voltage",
+            Value { text: volts(a.cold_voc), why: String::new() },
+        ));
+    }
+    for i in &report.plant.inverters {
+        let text = format!("{} W", digits(i.power.get::<watt>()));
+        facts.push((format!("inverter \"{}\"", i.name), "power", Value { text, why: decided(&i.steps) }));
+    }
+    for g in &report.plant.generators {
+        let amps = g.lasting.or(g.current);
+        let text =
+            amps.map_or_else(|| "not known".to_string(), |a| format!("{} A", digits(a.get::<ampere>())));
+        facts.push((format!("generator \"{}\"", g.name), "current", Value { text, why: decided(&g.steps) }));
+    }
+    facts
 }
 
 /// The check that decides among some: the first that failed, else the one that uses most of its limit.

@@ -31,6 +31,9 @@ use crate::quantity::{
     ChargeRate, ElectricCurrent, Ratio, RatioPerTemperature, ThermodynamicTemperature, Time,
 };
 
+/// State of charge to which the tail of lead-acid is counted: it never ends. Common practice, no source.
+const FULL_LEAD_ACID: f64 = 0.98;
+
 /// Power that an engine loses for each kelvin above 25 °C. Common practice, no source.
 const HEAT_PER_K: f64 = 0.004;
 
@@ -70,8 +73,8 @@ pub(super) fn plant(site: &Site, demands: &[Demand], reasons: &Reasons) -> Plant
                     bank: name(first),
                     mean: d.mean,
                     full: d.full,
-                    arrays: arrays_of(site, first),
-                    generators: generators_of(site, first),
+                    arrays: arrays_of(site, &d.banks),
+                    generators: generators_of(site, &d.banks),
                 })
             })
             .collect(),
@@ -276,7 +279,7 @@ fn generator_line(site: &Site, charger: &Charger) -> Option<GeneratorLine> {
         capacity: bank.capacity,
         current,
         start: Ratio::new::<ratio>(1.0 - depth),
-        target: Ratio::new::<ratio>(1.0),
+        target: Ratio::new::<ratio>(if chemistry.is_lead_acid() { FULL_LEAD_ACID } else { 1.0 }),
         knee: chemistry.is_lead_acid().then(|| Ratio::new::<ratio>(0.8)),
         efficiency: Ratio::new::<ratio>(data(chemistry).charge_efficiency.value),
     });

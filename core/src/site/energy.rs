@@ -3,9 +3,7 @@
 use alloc::string::String;
 use alloc::vec::Vec;
 
-use uom::si::electric_potential::volt;
 use uom::si::energy::watt_hour;
-use uom::si::power::watt;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 use uom::si::time::hour;
@@ -105,6 +103,14 @@ impl Demand {
         self.lists_standing = true;
     }
 
+    /// What a load says of its time.
+    fn note(&mut self, load: &LoadEntry) {
+        self.lists_standing |= load.standing;
+        if !is_timed(load) {
+            self.untimed.push(load.name.clone());
+        }
+    }
+
     /// The greatest full day.
     pub fn greatest_day(&self) -> DayDemand {
         self.full.iter().copied().fold(DayDemand::NONE, |a, b| if b.total > a.total { b } else { a })
@@ -162,7 +168,7 @@ pub(super) fn load_of(site: &Site, entry: &LoadEntry, nominal: ElectricPotential
     let start = entry
         .start_power
         .filter(|start| entry.ac && *start > power && power.value > 0.0)
-        .map(|start| Start::one_by_one(start / power, None))
+        .map(|start| Start::one_by_one(start / power, entry.start_time))
         .transpose()?;
     Ok(Load {
         draw,
@@ -182,7 +188,7 @@ pub(super) fn is_timed(entry: &LoadEntry) -> bool {
 }
 
 /// AC loads of an inverter: those that name it, and with the first inverter those that name none.
-pub(super) fn ac_loads<'a>(site: &'a Site, inverter: usize) -> impl Iterator<Item = &'a LoadEntry> {
+pub(super) fn ac_loads(site: &Site, inverter: usize) -> impl Iterator<Item = &LoadEntry> {
     let name = site.inverters.get(inverter).map(|i| i.name.as_str());
     site.loads.iter().filter(move |load| {
         load.ac && load.inverter.as_deref().map_or(inverter == 0, |wanted| Some(wanted) == name)
@@ -250,10 +256,7 @@ impl Sum<'_> {
                 }
                 Item::ConverterInput(i) if deep > 0 => {
                     let Some(entry) = self.site.converters.get(i) else { continue };
-                    let below = self.trees.iter().find(|tree| {
-                        matches!(tree.nodes.first().map(|n| n.item), Some(Item::Bank(b))
-                            if self.site.banks.get(b).is_some_and(|f| f.kind == FeedKind::Converter(i)))
-                    });
+                    let below = fed_by(self.site, self.trees, i);
                     let inner = match below {
                         Some(tree) => Sum { nominal: entry.output, ..*self }.tree(tree, deep - 1)?,
                         None => DayDemand::NONE,
@@ -330,7 +333,7 @@ pub(super) fn demands(site: &Site) -> Result<Vec<Demand>, Error> {
                 *cell = sum.whole(tree)?;
             }
         }
-        describe(site, tree, &mut demand);
+        describe(site, &trees, tree, &mut demand, 4);
         demand.lists_standing |= demand.full.iter().any(|d| d.standing.get::<watt_hour>() > 0.0);
         demands.push(demand);
     }
@@ -338,10 +341,14 @@ pub(super) fn demands(site: &Site) -> Result<Vec<Demand>, Error> {
 }
 
 /// What is missing, and the most that may be drawn.
-fn describe(site: &Site, tree: &Tree, demand: &mut Demand) {
-    let nominal = demand.banks.first().and_then(|&b| site.banks.get(b)).map(|b| b.nominal);
+fn describe(site: &Site, trees: &[Tree], tree: &Tree, demand: &mut Demand, deep: u32) {
+    let root = match tree.nodes.first().map(|n| n.item) {
+        Some(Item::Bank(b)) => site.banks.get(b),
+        _ => None,
+    };
+    let nominal = root.map_or_else(ElectricPotential::default, |b| b.nominal);
     let each = |load: &LoadEntry| {
-        let power = load.power.or_else(|| load.current.zip(nominal).map(|(a, v)| a * v)).unwrap_or_default();
+        let power = load.power.or_else(|| load.current.map(|a| a * nominal)).unwrap_or_default();
         power * f64::from(load.count)
     };
     for node in &tree.nodes {
@@ -349,28 +356,38 @@ fn describe(site: &Site, tree: &Tree, demand: &mut Demand) {
             Item::Load(i) => {
                 let Some(load) = site.loads.get(i) else { continue };
                 demand.peak += each(load);
-                demand.lists_standing |= load.standing;
-                if !is_timed(load) {
-                    demand.untimed.push(load.name.clone());
-                }
+                demand.note(load);
             }
             Item::Inverter(i) => {
                 let Some(inverter) = site.inverters.get(i) else { continue };
                 let mut ac = Power::default();
                 for load in ac_loads(site, i) {
                     ac += each(load);
-                    demand.lists_standing |= load.standing;
-                    if !is_timed(load) {
-                        demand.untimed.push(load.name.clone());
-                    }
+                    demand.note(load);
                 }
                 demand.peak += ac / inverter.efficiency;
                 if inverter.idle.is_none() {
                     demand.idle_unknown.push(inverter.name.clone());
                 }
             }
+            Item::ConverterInput(i) if deep > 0 => {
+                let (Some(converter), Some(below)) = (site.converters.get(i), fed_by(site, trees, i)) else {
+                    continue;
+                };
+                let before = demand.peak;
+                demand.peak = Power::default();
+                describe(site, trees, below, demand, deep - 1);
+                demand.peak = before + demand.peak / converter.efficiency;
+            }
             _ => {}
         }
     }
-    debug_assert!(demand.peak.get::<watt>() >= 0.0 && nominal.is_none_or(|v| v.get::<volt>() > 0.0));
+}
+
+/// The network behind a converter.
+fn fed_by<'a>(site: &Site, trees: &'a [Tree], converter: usize) -> Option<&'a Tree> {
+    trees.iter().find(|tree| {
+        matches!(tree.nodes.first().map(|n| n.item), Some(Item::Bank(b))
+            if site.banks.get(b).is_some_and(|f| f.kind == FeedKind::Converter(converter)))
+    })
 }

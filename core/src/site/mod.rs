@@ -12,6 +12,7 @@ mod flow;
 mod graph;
 mod grow;
 mod joints;
+mod json;
 mod lines;
 mod model;
 mod offers;

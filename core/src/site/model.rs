@@ -86,6 +86,7 @@ pub enum LoadKind {
 
 /// `[[load]]`.
 #[derive(Clone, Debug)]
+#[allow(clippy::struct_excessive_bools)] // they are the flags of the file, each with its key
 pub struct LoadEntry {
     /// `name`.
     pub name: String,
@@ -123,6 +124,8 @@ pub struct LoadEntry {
     pub power_factor: Option<Ratio>,
     /// `start_power = "1440 W"` of an AC load.
     pub start_power: Option<Power>,
+    /// `start_time = "0.5 s"` of that.
+    pub start_time: Option<Time>,
     /// `standing = true`: always on, by its nature: monitor, alarm, controller.
     pub standing: bool,
     /// `priority = 1`: shed last.

@@ -96,6 +96,7 @@ pub enum Room {
 
 /// `[[bank]]` as stated.
 #[derive(Clone, Debug)]
+#[allow(clippy::struct_excessive_bools)] // they are the flags of the file, each with its key
 pub struct BankPart {
     /// `name`.
     pub name: String,
@@ -139,6 +140,8 @@ pub struct BankPart {
     pub stud: Option<Stud>,
     /// `temperature = ["5 degC", "30 degC"]` of the cells.
     pub temperature: Option<(ThermodynamicTemperature, ThermodynamicTemperature)>,
+    /// `cold_capacity = "60 %"`: part of the capacity left at its coldest, by its maker.
+    pub cold_capacity: Option<Ratio>,
     /// `depth = "80 %"`: greatest.
     pub depth: Option<Ratio>,
     /// `daily_depth = "20 %"`.
@@ -183,7 +186,7 @@ impl BankPart {
     /// A bank of which nothing is stated but a name.
     pub(super) fn unstated(name: String) -> Self {
         Self {
-            name: name,
+            name,
             line: 0,
             battery: None,
             chemistry: None,
@@ -204,6 +207,7 @@ impl BankPart {
             charge_from: None,
             stud: None,
             temperature: None,
+            cold_capacity: None,
             depth: None,
             daily_depth: None,
             disconnect: None,
@@ -367,6 +371,8 @@ pub struct ControllerPart {
     pub idle: Option<Power>,
     /// Its set points.
     pub charging: Charging,
+    /// `load_dump = true`: it bears that the bank is disconnected under charge.
+    pub load_dump: Option<bool>,
     /// `bank`: name of the bank it charges.
     pub bank: Option<String>,
     /// `board`: to which its output leads, where the circuit is designed.

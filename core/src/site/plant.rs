@@ -10,10 +10,12 @@ use uom::si::electric_potential::volt;
 
 use super::bank::cells;
 use super::check::At;
+use super::check::bank::drawn;
 use super::check::place::touch;
 use super::finding::{Findings, Severity, digits};
 use super::graph::Item;
 use super::model::Board;
+use super::parts::Monitoring;
 use super::plan::{Plan, sources};
 use super::system::{BankEntry, Site};
 use crate::battery::cell_voltages;
@@ -184,7 +186,7 @@ pub(super) fn consumers(site: &Site, plan: &Plan, found: &mut Findings) {
 fn unlike_banks(site: &Site, plan: &Plan, found: &mut Findings) {
     for tree in &plan.trees {
         let mut banks = tree.nodes.iter().filter_map(|n| match n.item {
-            Item::Bank(i) => site.banks.get(i),
+            Item::Bank(i) => site.banks.get(i).filter(|b| b.is_battery()),
             _ => None,
         });
         let Some(first) = banks.next() else { continue };
@@ -307,13 +309,7 @@ fn plausible(bank: &BankEntry, place: &str, found: &mut Findings) {
 pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
     for (index, bank) in site.banks.iter().enumerate().filter(|(_, bank)| bank.is_battery()) {
         let place = format!("bank \"{}\"", bank.name);
-        let drawn: f64 = site
-            .circuits
-            .iter()
-            .zip(&plan.circuits)
-            .filter(|(c, _)| c.from == bank.name || c.to == bank.name)
-            .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current.get::<ampere>()))
-            .sum();
+        let drawn = drawn(site, plan, &bank.name).get::<ampere>();
         plausible(bank, &place, found);
         let is_told = bank.part.as_ref().is_some_and(|p| p.designed || p.take_off.is_some());
         if bank.strings > 2 && !is_told && !site.is_whole {
@@ -410,7 +406,8 @@ pub(super) fn banks(site: &Site, plan: &Plan, found: &mut Findings) {
         }
     }
     unlike_banks(site, plan, found);
-    if site.earthing == Earthing::Floating {
+    let watched = matches!(site.place.monitoring, Some(Monitoring::Insulation));
+    if site.earthing == Earthing::Floating && !watched {
         found.add(
             Severity::Advice,
             "R19",

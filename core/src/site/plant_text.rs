@@ -18,6 +18,7 @@ use super::finding::digits;
 use super::lines::{ArrayLine, BankLine, DemandLine, GeneratorLine, InverterLine, Rejected, Step};
 use super::text::printable;
 use crate::citation::Seen;
+use crate::quantity::Energy;
 
 /// Months as they head a column.
 pub(super) const MONTHS: [&str; 12] =
@@ -220,11 +221,17 @@ fn generator(line: &GeneratorLine, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         row(
             f,
             "recharge",
-            &format!("{:.1} h from the greatest depth to full, absorption tail included", time.get::<hour>()),
+            &format!(
+                "{:.1} h from the usual depth to full; lead-acid to 98 %, its absorption tail included",
+                time.get::<hour>()
+            ),
         )?;
     }
     steps(f, &line.steps)
 }
+
+/// A figure of a day, Wh.
+type Pick = fn(&super::energy::DayDemand) -> f64;
 
 /// Energy of the months: what is taken out on the mean day, and what comes in.
 fn months(line: &DemandLine, f: &mut fmt::Formatter<'_>) -> fmt::Result {
@@ -236,14 +243,14 @@ fn months(line: &DemandLine, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         }
         writeln!(f)
     };
-    let of = |pick: fn(&super::energy::DayDemand) -> f64| {
+    let of = |pick: Pick| {
         let mut cells = [0.0; 12];
         for (cell, one) in cells.iter_mut().zip(&line.mean) {
             *cell = pick(one);
         }
         cells
     };
-    let rows: [(&str, fn(&super::energy::DayDemand) -> f64); 6] = [
+    let rows: [(&str, Pick); 6] = [
         ("DC loads", |d| d.dc.get::<watt_hour>()),
         ("inverters", |d| d.inverters.get::<watt_hour>()),
         ("controllers", |d| d.controllers.get::<watt_hour>()),
@@ -281,7 +288,7 @@ pub(super) fn balance(line: &DemandLine) -> Option<[f64; 12]> {
     }
     let mut cells = [0.0; 12];
     for (month, cell) in cells.iter_mut().enumerate() {
-        let arrays = line.arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, |e| e.get::<watt_hour>());
+        let arrays = line.arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, Energy::get::<watt_hour>);
         let out = line.mean.get(month).map_or(0.0, |d| d.total.get::<watt_hour>());
         *cell = arrays + line.generators.get::<watt_hour>() - out;
     }

@@ -57,11 +57,13 @@ pub(super) fn hottest_cell(site: &Site, module: &Module) -> Result<Thermodynamic
     )
 }
 
-/// The bank of a controller, or the first.
+/// The bank that a controller charges.
 pub(super) fn bank_of<'a>(site: &'a Site, controller: &ControllerPart) -> Option<&'a BankEntry> {
-    match controller.bank.as_ref() {
-        Some(name) => site.banks.iter().find(|b| b.name == *name),
-        None => site.banks.iter().find(|b| b.is_battery()),
+    let charger = site.chargers.iter().find(|c| c.name == controller.name);
+    match (charger, controller.bank.as_ref()) {
+        (Some(charger), _) => site.banks.get(charger.bank?),
+        (None, Some(name)) => site.banks.iter().find(|b| b.name == *name),
+        (None, None) => site.banks.iter().find(|b| b.is_battery()),
     }
 }
 

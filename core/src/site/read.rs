@@ -1,17 +1,26 @@
 //! Reads a site file: every problem with its line and its remedy, not the first only.
 //!
 //! The text becomes a tree of spans ([`syntax`]), each section is walked against its declared keys
-//! ([`keys`], [`entry`]), and what stands between sections is checked last ([`ends`]).
+//! ([`keys`], [`plant_keys`], [`sections`], [`entry`]), and what stands between sections is checked by itself ([`ends`],
+//! [`reach`], [`fed`], [`references`]), so that no slip in one place hides another.
 
+mod bank;
 mod circuits;
 mod ends;
 mod entry;
 mod equipment;
+mod fed;
 mod keys;
 mod log;
+mod meant;
+mod modules;
+mod nodes;
 mod plant;
 mod plant_keys;
+mod reach;
 mod references;
+mod sections;
+mod sources;
 mod stock;
 mod surroundings;
 mod syntax;

@@ -16,7 +16,7 @@ use super::model::{CircuitEntry, Document, Return};
 use super::plan::{Fitted, Plan, Planned, Reason, plan};
 use super::read::Problems;
 use super::sheet::{Label, MaintenanceTask, Meter, Purchase, Step, SwitchingStep, paper, purchases};
-use super::system::Site;
+use super::system::{BankEntry, FeedKind, Site};
 use super::wiring::findings;
 use crate::battery::Chemistry;
 use crate::cable::Conductor;
@@ -153,7 +153,7 @@ impl Report {
 /// use ampwright::site::{inspect, read};
 /// let site = read(include_str!("../../examples/sites/heron_point.toml")).map_err(|p| p.to_string())?;
 /// let report = inspect(&site).map_err(|p| p.to_string())?;
-/// assert!(report.to_string().contains("bank main"));
+/// assert!(report.to_string().contains("house main"));
 /// # Ok::<(), String>(())
 /// ```
 pub fn inspect(document: &Document) -> Result<Report, Problems> {
@@ -306,9 +306,13 @@ fn system(site: &Site) -> Vec<String> {
         })
         .collect();
     let earth = site.rules.set().terms.earth;
+    let points = match site.place.bonds {
+        Some(1) | None => "one point".to_string(),
+        Some(count) => format!("{count} points"),
+    };
     lines.push(match site.earthing {
-        Earthing::Negative => format!("negative pole to {earth} at one point"),
-        Earthing::Positive => format!("positive pole to {earth} at one point"),
+        Earthing::Negative => format!("negative pole to {earth} at {points}"),
+        Earthing::Positive => format!("positive pole to {earth} at {points}"),
         Earthing::Floating => format!("neither pole to {earth}"),
     });
     lines.push(format!(
@@ -373,6 +377,23 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
             lines.push(format!("terminals without mark taken for {} °C: {unmarked}", digits(usual)));
         }
     }
+    let stalled: Vec<&str> = site
+        .loads
+        .iter()
+        .filter(|l| l.start.is_some())
+        .filter(|l| {
+            let circuit = site.circuits.iter().position(|c| c.to == l.name);
+            let planned = circuit.and_then(|c| plan.circuits.get(c)).and_then(|p| p.as_ref());
+            planned.is_some_and(|p| p.fitted.iter().any(|f| f.designed))
+        })
+        .map(|l| l.name.as_str())
+        .collect();
+    if !stalled.is_empty() {
+        lines.push(format!(
+            "devices chosen to carry a start guard the cable, not a motor that stalls: {}",
+            stalled.join(", ")
+        ));
+    }
     if plan.circuits.iter().flatten().any(|p| p.fitted.iter().any(|f| f.designed)) {
         lines.push(
             "devices designed here sit at the source's end, within the unprotected length of the rule set, in every \
@@ -424,9 +445,31 @@ fn plant_assumptions(site: &Site) -> Vec<String> {
     }
     if site.loads.iter().any(|l| l.use_of.duty_hot.is_some()) {
         lines.push(
-            "duty of a load as stated at 20 °C, duty_hot at the greatest ambient, in a straight line between"
+            "duty of a load as stated at 20 °C, duty_hot at the greatest ambient, in a straight line between; taken at the mean temperature of each month"
                 .to_string(),
         );
+    }
+    for array in &site.arrays {
+        let m = &array.module;
+        let taken: Vec<&str> = [
+            (
+                m.voc_coefficient.is_none(),
+                "cold open-circuit voltage by the rule set's table, where it has one",
+            ),
+            (m.power_coefficient.is_none(), "-0.4 %/K of power, its hot voltage by that of open circuit"),
+            (m.isc_coefficient.is_none(), "0.05 %/K of short-circuit current"),
+            (m.noct.is_none(), "a NOCT of 47 °C"),
+        ]
+        .into_iter()
+        .filter_map(|(missing, words)| missing.then_some(words))
+        .collect();
+        if !taken.is_empty() {
+            lines.push(format!(
+                "module of array \"{}\": {} (common practice, no source; state its coefficients)",
+                array.part.name,
+                taken.join("; ")
+            ));
+        }
     }
     if !site.arrays.is_empty() {
         lines.push(format!(
@@ -489,6 +532,31 @@ fn not_covered(site: &Site) -> Vec<String> {
         ));
     }
     lines.push("loads and inverters that can feed back: every one is taken for a load only".to_string());
+    let bare: Vec<&str> = site
+        .circuits
+        .iter()
+        .filter(|c| c.size.is_some() && (c.from_lug.is_none() || c.to_lug.is_none()))
+        .map(|c| c.name.as_str())
+        .collect();
+    if !bare.is_empty() {
+        lines.push(format!(
+            "whether lugs fit, where the stud of a terminal or the lug is not stated: {}",
+            bare.join(", ")
+        ));
+    }
+    if let Some(from) = site.rules.pv().arc_fault_from {
+        let above = |feed: &&BankEntry| {
+            matches!(feed.kind, FeedKind::Array(_)) && feed.highest.get::<volt>() > from.value
+        };
+        for feed in site.banks.iter().filter(above) {
+            lines.push(format!(
+                "arc-fault protection of array \"{}\", asked for above {} V ({})",
+                feed.name,
+                digits(from.value),
+                from.citation
+            ));
+        }
+    }
     if site.is_whole {
         lines.extend(
             [

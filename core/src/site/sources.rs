@@ -11,19 +11,27 @@ use uom::si::electric_potential::volt;
 use super::flow::Flows;
 use super::graph::{Item, Tree};
 use super::parts::Sense;
-use super::system::{FeedKind, Site};
+use super::system::{BankEntry, FeedKind, Site};
 use crate::rules::LoadUse;
 
-/// Sums of what hangs at or below each node.
-fn below(tree: &Tree, own: impl Fn(Item) -> f64) -> Vec<f64> {
+/// Sums of what hangs at or below each node; what reaches an item that `ends` it goes no further.
+fn below_until(tree: &Tree, own: impl Fn(Item) -> f64, ends: impl Fn(Item) -> bool) -> Vec<f64> {
     let mut sums: Vec<f64> = tree.nodes.iter().map(|node| own(node.item)).collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
         let amps = sums.get(index).copied().unwrap_or(0.0);
+        if ends(node.item) {
+            continue;
+        }
         if let Some(parent) = sums.get_mut(node.parent) {
             *parent += amps;
         }
     }
     sums
+}
+
+/// Sums of what hangs at or below each node.
+fn below(tree: &Tree, own: impl Fn(Item) -> f64) -> Vec<f64> {
+    below_until(tree, own, |_| false)
 }
 
 impl Flows {
@@ -36,12 +44,14 @@ impl Flows {
         if !tree.nodes.iter().any(|node| matches!(node.item, Item::Charger(_))) {
             return;
         }
-        let charge = below(tree, limit);
+        // A bank on the way takes what comes: beyond it flows what the document states of the link.
+        let is_bank = |item: Item| matches!(item, Item::Bank(i) if site.banks.get(i).is_some_and(BankEntry::is_battery));
+        let charge = below_until(tree, limit, is_bank);
         // Volts lost on the way to the bank while every source gives all it may.
         let mut lost = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate().skip(1) {
             let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
-            let amps = charge.get(index).copied().unwrap_or(0.0);
+            let amps = if is_bank(node.item) { 0.0 } else { charge.get(index).copied().unwrap_or(0.0) };
             let before = lost.get(node.parent).copied().unwrap_or(0.0);
             if let Some(own) = lost.get_mut(index) {
                 *own = before + amps * flow.ohms;
@@ -49,7 +59,10 @@ impl Flows {
             let Item::Charger(charger) = node.item else {
                 if amps > flow.current {
                     // By the sources, and no more by the loads.
-                    flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
+                    let loads = flow.low_current.unwrap_or(flow.current);
+                    flow.low_current = Some(loads);
+                    // A start flows the other way: it counts as far as it outgrows what the sources drive.
+                    flow.start = flow.start.map(|start| (loads + start - amps).max(0.0));
                     flow.current = amps;
                     flow.continuous_share = 1.0;
                     flow.charged = true;
@@ -78,10 +91,11 @@ impl Flows {
             Some(FeedKind::Array(_)) => self.take_array(site, tree),
             Some(FeedKind::Converter(_)) => {
                 let limit = site.banks.get(root).and_then(|f| f.limit).map_or(0.0, |a| a.get::<ampere>());
-                for node in tree.nodes.iter().skip(1).filter(|node| node.parent == 0) {
+                for node in tree.nodes.iter().skip(1) {
                     let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
+                    // No more than that flows into any fault behind it.
                     flow.limit = Some(limit);
-                    if limit > flow.current {
+                    if node.parent == 0 && limit > flow.current {
                         flow.low_current = Some(flow.low_current.unwrap_or(flow.current));
                         flow.current = limit;
                     }

@@ -199,7 +199,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
             }
             Item::Inverter(i) => {
                 let inverter = self.site.inverters.get(i)?;
-                load.power = inverter.surge? / inverter.efficiency;
+                load.power = inverter.start? / inverter.efficiency;
             }
             _ => return None,
         }
@@ -237,8 +237,11 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         let site = self.site;
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
-        let starts = starts(self, tree, solved);
         let mut branches = Branches::default();
+        let started: Vec<Option<(f64, f64)>> = (0..tree.nodes.len())
+            .map(|index| self.started(tree, &mut branches, index, (emf, collapsed)))
+            .collect();
+        let starts = starts(self, tree, solved, &started);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate() {
             let (Some(circuit), Some(state)) = (node.circuit, solved.get(index)) else { continue };
@@ -258,7 +261,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
                 drop_before: (emf - above).clamp(0.0, emf),
                 ohms_before,
                 start: starts.get(index).copied().flatten(),
-                started: self.started(tree, &mut branches, index, (emf, collapsed)),
+                started: started.get(index).copied().flatten(),
                 before: tree.nodes.get(node.parent).and_then(|p| p.circuit),
                 end: node.item,
             });
@@ -321,7 +324,7 @@ fn start(site: &Site, item: Item, amps: f64, volts: f64) -> Option<f64> {
         }
         Item::Inverter(i) => {
             let inverter = site.inverters.get(i)?;
-            let surge = inverter.surge?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
+            let surge = inverter.start?.get::<watt>() / inverter.efficiency.get::<ratio>() / volts.max(1e-3);
             Some((surge - amps).max(0.0))
         }
         _ => None,
@@ -357,14 +360,21 @@ fn starts<F: Fn(usize) -> f64>(
     solver: &Solver<'_, F>,
     tree: &Tree,
     states: &[NodeState],
+    started: &[Option<(f64, f64)>],
 ) -> Vec<Option<f64>> {
     let mut largest: Vec<Option<f64>> = tree
         .nodes
         .iter()
         .zip(states)
-        .map(|(n, s)| {
+        .zip(started)
+        .map(|((n, s), started)| {
             let (amps, volts) = (libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>());
-            if solver.is_off(n.item) { None } else { start(solver.site, n.item, amps, volts) }
+            match (n.item, started) {
+                _ if solver.is_off(n.item) => None,
+                // An inverter draws its surge at the volts of the surge, where there are any.
+                (Item::Inverter(_), Some((_, surge))) if *surge > 0.0 => Some((surge - amps).max(0.0)),
+                _ => start(solver.site, n.item, amps, volts),
+            }
         })
         .collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {

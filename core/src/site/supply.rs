@@ -85,20 +85,17 @@ pub(super) fn array_energy(site: &Site, array: &Array, bank: &BankEntry, month: 
     Some(whole * (1.0 - ARRAY_LOSS) * (1.0 - shaded) * stored(bank))
 }
 
-/// Energy of all arrays of a bank in each month; `None` without weather or arrays.
-pub(super) fn arrays_of(site: &Site, bank: usize) -> Option<[Energy; 12]> {
-    let entry = site.banks.get(bank)?;
+/// Energy of all arrays of some banks in each month; `None` without weather or arrays.
+pub(super) fn arrays_of(site: &Site, banks: &[usize]) -> Option<[Energy; 12]> {
     site.weather.as_ref()?;
     let mut months = [Energy::new::<joule>(0.0); 12];
     let mut any = false;
     for array in &site.arrays {
-        let charges = array
+        let charger = array
             .controller
-            .and_then(|c| site.chargers.iter().find(|x| x.kind == ChargerKind::Controller(c)))
-            .is_some_and(|c| c.bank == Some(bank));
-        if !charges {
-            continue;
-        }
+            .and_then(|c| site.chargers.iter().find(|x| x.kind == ChargerKind::Controller(c)));
+        let bank = charger.and_then(|c| c.bank).filter(|b| banks.contains(b));
+        let Some(entry) = bank.and_then(|b| site.banks.get(b)) else { continue };
         any = true;
         for (month, cell) in months.iter_mut().enumerate() {
             *cell += array_energy(site, array, entry, month).unwrap_or_default();
@@ -107,12 +104,14 @@ pub(super) fn arrays_of(site: &Site, bank: usize) -> Option<[Energy; 12]> {
     any.then_some(months)
 }
 
-/// Energy that generators bring in a day: a stated figure, or their lasting current over the hours they may run.
-pub(super) fn generators_of(site: &Site, bank: usize) -> Energy {
+/// Energy that generators bring into some banks in a day: a stated figure, or their lasting current over the hours they
+/// may run.
+pub(super) fn generators_of(site: &Site, banks: &[usize]) -> Energy {
     let mut sum = Energy::default();
-    for charger in site.chargers.iter().filter(|c| c.bank == Some(bank)) {
+    for charger in &site.chargers {
         let ChargerKind::Generator(index) = charger.kind else { continue };
-        let (Some(part), Some(entry)) = (site.generators.get(index), site.banks.get(bank)) else { continue };
+        let bank = charger.bank.filter(|b| banks.contains(b)).and_then(|b| site.banks.get(b));
+        let (Some(part), Some(entry)) = (site.generators.get(index), bank) else { continue };
         let given = part.daily.or_else(|| {
             let hours = part.hours?.get::<hour>().min(24.0);
             let hot = part

@@ -153,6 +153,8 @@ pub(super) struct InverterEntry {
     pub power: Power,
     /// `surge = "2400 W"`.
     pub surge: Option<Power>,
+    /// The most that it gives for seconds: its surge, or what its loads ask for at their start where that is less.
+    pub start: Option<Power>,
     /// The rest of what is stated.
     pub part: InverterPart,
     /// Power, surge and efficiency were chosen here.

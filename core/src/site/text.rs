@@ -13,7 +13,7 @@ use uom::si::ratio::percent;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::finding::{Severity, digits};
-use super::report::{CircuitLine, Report};
+use super::report::{CircuitLine, DeviceLine, Report};
 use crate::cable::{Class, Coating, Conductor, Material};
 use crate::circuit::{Outcome, lower_bound, upper_bound};
 use crate::citation::Seen;
@@ -22,7 +22,7 @@ use crate::protection::{Guard, Pole};
 use crate::rules::{Check, Installation, Key, Space};
 
 /// Stands under every report (DESIGN 11).
-const CAUTIONS: [&str; 5] = [
+pub(super) const CAUTIONS: [&str; 5] = [
     "A bank stores enough energy to melt tools: remove jewellery, insulate tools, cover terminals.",
     "A DC arc does not go out by itself: never open a joint, fuse or connector under load.",
     "Lead-acid and nickel banks give off hydrogen while they charge: ventilate, no sparks.",
@@ -273,11 +273,8 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         row(f, "not taken", &format!("{size}: {}", printable(why)))?;
     }
     for checked in &j.checks {
-        let bought = c.devices.first().is_some_and(|d| d.specified)
-            && matches!(checked.check, Check::DeviceSupply | Check::Breaking);
-        let advice = checked.check == Check::Drop
-            && c.run.drop.is_none()
-            && !c.run.rules.drop_limit(c.run.usage).required;
+        let bought = c.devices.first().is_some_and(|d| is_bought(d, checked.check));
+        let advice = is_recommended(c, checked.check);
         let mark = match checked.outcome {
             Outcome::Failed if advice => "advice",
             Outcome::Passed if bought => {
@@ -291,6 +288,17 @@ fn detail(f: &mut fmt::Formatter<'_>, number: usize, c: &CircuitLine) -> fmt::Re
         row(f, mark, &checked.to_string())?;
     }
     Ok(())
+}
+
+/// A check that tells what to buy, since nothing is known of a part yet.
+pub(super) fn is_bought(device: &DeviceLine, check: Check) -> bool {
+    device.specified && matches!(check, Check::DeviceSupply | Check::Breaking)
+}
+
+/// A check against a limit that the rule set only recommends.
+pub(super) fn is_recommended(circuit: &CircuitLine, check: Check) -> bool {
+    let run = &circuit.run;
+    check == Check::Drop && run.drop.is_none() && !run.rules.drop_limit(run.usage).required
 }
 
 /// Checks that concern a device rather than its conductor.

@@ -29,6 +29,13 @@ pub(super) fn arrays(site: &Site, found: &mut Findings) {
             );
             continue;
         };
+        let controller = array.controller.and_then(|c| site.controllers.get(c));
+        if controller.is_some_and(|c| c.kind.is_none()) {
+            at.unmade(
+                ("R10", "array-not-checked"),
+                "whether its controller joins array and bank or tracks: taken for one that tracks; state kind",
+            );
+        }
         match result {
             Ok(strings) => {
                 for check in &strings.checks {
@@ -54,7 +61,7 @@ const fn meaning(subject: PvSubject) -> (&'static str, Severity, &'static str) {
             Severity::Danger,
             "use fewer modules in series, or a part for the cold voltage",
         ),
-        PvSubject::WindowHigh | PvSubject::InputCurrent | PvSubject::OutputCurrent => (
+        PvSubject::WindowHigh => (
             "array-yield-cut",
             Severity::Advice,
             "accept the loss in the best hours, or use a larger controller",
@@ -64,14 +71,13 @@ const fn meaning(subject: PvSubject) -> (&'static str, Severity, &'static str) {
             Severity::Nonconforming,
             "use more modules in series: hot, it does not charge",
         ),
-        PvSubject::ShortCircuit => (
+        // Where the controller limits itself only yield is lost: told apart below.
+        PvSubject::ShortCircuit | PvSubject::InputCurrent | PvSubject::OutputCurrent => (
             "array-current-above-controller",
             Severity::Nonconforming,
             "use fewer strings on it, or a larger controller",
         ),
-        PvSubject::StringFault | PvSubject::ConductorFault => {
-            ("string-device-missing", Severity::Danger, "fit a device in every string")
-        }
+        PvSubject::StringFault => ("string-device-missing", Severity::Danger, "fit a device in every string"),
         _ => (
             "string-device-wrong",
             Severity::Nonconforming,
@@ -81,20 +87,22 @@ const fn meaning(subject: PvSubject) -> (&'static str, Severity, &'static str) {
 }
 
 fn one(array: &Array, check: &PvCheck, at: &mut At<'_>) {
-    let (slug, severity, remedy) = meaning(check.subject);
+    // The string's conductor is not in the document: the question takes the module's rating for it, which is judged already.
+    if check.subject == PvSubject::ConductorFault {
+        return;
+    }
+    let (slug, severity, remedy) =
+        meaning(if check.only_yield { PvSubject::WindowHigh } else { check.subject });
     match check.outcome {
         PvOutcome::Passed if check.citation.seen == Seen::Recalled => {
             at.pass("R10", &format!("{check}: the recalled value; verify ({})", check.citation));
         }
         PvOutcome::Passed => at.pass("R10", &check.to_string()),
         PvOutcome::Failed => {
-            let severity = if check.only_yield { Severity::Advice } else { severity };
             at.tell(severity, ("R10", slug), check.to_string(), Some(check.citation), remedy);
         }
         // One string has no other to feed its fault.
-        PvOutcome::NotChecked
-            if array.strings < 2
-                && matches!(check.subject, PvSubject::StringFault | PvSubject::ConductorFault) => {}
+        PvOutcome::NotChecked if array.strings < 2 && check.subject == PvSubject::StringFault => {}
         PvOutcome::NotChecked => at.unmade(("R10", "array-not-checked"), &check.to_string()),
     }
 }
@@ -139,10 +147,15 @@ fn earth_fault(site: &Site, strings: &StringsChecked, at: &mut At<'_>) {
     let Some((cold, _)) = strings.voltages.cold_voc else { return };
     let volts = cold.get::<volt>();
     let Some(from) = site.rules.pv().earth_fault_from else {
-        at.unmade(
-            ("R19", "monitoring-not-checked"),
-            "monitoring of faults to earth: the rule set holds nothing on arrays",
-        );
+        match site.place.monitoring {
+            Some(Monitoring::Insulation | Monitoring::EarthFault) => {
+                at.pass("R19", "faults to earth are watched for; the rule set holds nothing on arrays");
+            }
+            _ => at.unmade(
+                ("R19", "monitoring-not-checked"),
+                "monitoring of faults to earth: the rule set holds nothing on arrays; state monitoring where there is any",
+            ),
+        }
         return;
     };
     if volts <= from.value {
@@ -194,20 +207,21 @@ fn clamp(site: &Site, array: &Array, strings: &StringsChecked, at: &mut At<'_>) 
         return;
     }
     let vmp = array.module.vmp * f64::from(array.series);
-    let lost = 1.0 - (bank.nominal / vmp).get::<ratio>();
+    // Warm modules in the sun stand far below their label; by the label every plain module would be told of.
+    let lost = 1.0 - (bank.nominal / strings.voltages.hot_vmp.unwrap_or(vmp)).get::<ratio>();
     if lost > CLAMP_LOSS {
         at.advice(
             ("R10", "clamp-loses-yield"),
             format!(
-                "a controller that joins array and bank holds {} V of modules at {} V: {:.0} % of the power is left \
-                 behind{}",
+                "a controller that joins array and bank holds {} V of modules{} at {} V: {:.0} % of the power is \
+                 left behind",
                 digits(vmp.get::<volt>()),
-                digits(bank.nominal.get::<volt>()),
-                100.0 * lost,
                 strings.voltages.hot_vmp.map_or_else(alloc::string::String::new, |hot| format!(
                     " (hot, {} V)",
                     digits(hot.get::<volt>())
-                ))
+                )),
+                digits(bank.nominal.get::<volt>()),
+                100.0 * lost
             ),
             "use modules nearer to the bank's voltage, or a tracking controller",
         );

@@ -7,6 +7,7 @@ use alloc::vec::Vec;
 use uom::si::energy::watt_hour;
 
 use super::At;
+use crate::quantity::Energy;
 use crate::site::energy::Demand;
 use crate::site::finding::{Findings, digits};
 use crate::site::plant_text::MONTHS;
@@ -16,7 +17,7 @@ use crate::site::system::Site;
 /// Every bank on the mean day of each month.
 pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
     for demand in demands {
-        let Some((index, bank)) = demand.banks.first().and_then(|&b| Some((b, site.banks.get(b)?))) else {
+        let Some(bank) = demand.banks.first().and_then(|&b| site.banks.get(b)) else {
             continue;
         };
         let mut at = At::new(found, format!("bank \"{}\"", bank.name), bank.line);
@@ -25,8 +26,8 @@ pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
             // Told as a bank without charge.
             continue;
         }
-        let arrays = arrays_of(site, index);
-        let others = generators_of(site, index).get::<watt_hour>();
+        let arrays = arrays_of(site, &demand.banks);
+        let others = generators_of(site, &demand.banks).get::<watt_hour>();
         if arrays.is_none() && others <= 0.0 {
             at.unmade(
                 ("R10", "energy-not-checked"),
@@ -41,7 +42,7 @@ pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
         let mut short: Vec<String> = Vec::new();
         let mut worst = f64::INFINITY;
         for (month, day) in demand.mean.iter().enumerate() {
-            let sun = arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, |e| e.get::<watt_hour>());
+            let sun = arrays.as_ref().and_then(|a| a.get(month)).map_or(0.0, Energy::get::<watt_hour>);
             let (brought, taken) = (sun + others, day.total.get::<watt_hour>());
             if taken <= 0.0 {
                 continue;
@@ -57,7 +58,15 @@ pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
         } else {
             at.nonconforming(
                 ("R10", "energy-short"),
-                format!("on the mean day less comes in than is taken out: {}", short.join(", ")),
+                format!(
+                    "on the mean day less comes in than is taken out: {}",
+                    match short.as_slice() {
+                        [first, .., last] if short.len() == 12 && first.get(4..) == last.get(4..) => {
+                            format!("every month {}", first.get(4..).unwrap_or(""))
+                        }
+                        list => list.join(", "),
+                    }
+                ),
                 "use a larger array, less load in those months, or a generator for longer",
             );
         }

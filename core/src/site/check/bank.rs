@@ -1,6 +1,7 @@
 //! Banks: capacity, cold, disconnect, sharing, ventilation (R12 to R15, R20).
 
 use alloc::format;
+use alloc::string::String;
 use alloc::vec;
 use alloc::vec::Vec;
 
@@ -12,14 +13,14 @@ use uom::si::electrical_resistance::{milliohm, ohm};
 use uom::si::ratio::ratio;
 use uom::si::temperature_interval::kelvin;
 use uom::si::thermodynamic_temperature::degree_celsius;
-use uom::si::time::day;
+use uom::si::time::{day, hour};
 use uom::si::volume_rate::cubic_meter_per_hour;
 
 use super::At;
 use crate::battery::{
-    self, ChargeStage, Chemistry, ColdSpell, FREEZING_MARGIN_K, GASSING, Link, StringShare, StringSource,
-    charge_limit, cold_fraction, cold_spell, data, disconnect, freezing_floor, is_within, share,
-    ventilation_flow, ventilation_opening,
+    self, ChargeStage, Chemistry, ColdSpell, DISCONNECT, FREEZING_MARGIN_K, GASSING, Link, StringShare,
+    StringSource, capacity_left, charge_limit, cold_spell, data, disconnect, freezing_floor,
+    hour_rate_capacity, is_within, share, ventilation_flow, ventilation_opening,
 };
 use crate::quantity::{
     ChargeRate, ElectricCurrent, ElectricalResistance, Ratio, StateOfCharge, TemperatureInterval,
@@ -38,6 +39,10 @@ const UNEQUAL: (f64, f64) = (1.1, 1.25);
 const JOINT_OHM: f64 = 0.1e-3;
 /// How far a stated disconnect may lie below what the chemistry, current and cold ask for, part of nominal.
 const DISCONNECT_SLACK: f64 = 0.01;
+/// Least distance of reconnect from disconnect, part of nominal. Common practice, no source.
+const HYSTERESIS: f64 = 0.025;
+/// Rounding of voltages, V.
+const HAIR_V: f64 = 1e-6;
 
 /// Every bank.
 pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Findings) {
@@ -52,9 +57,19 @@ pub(super) fn banks(site: &Site, plan: &Plan, demands: &[Demand], found: &mut Fi
         disconnects(site, bank, chemistry, part, demand, &mut at);
         limits(bank, part, &mut at);
         ventilation(bank, chemistry, part, &mut at);
-        let drawn = drawn(site, plan, &bank.name);
-        sharing(bank, part, drawn, &mut at);
+        let carried = carried(site, plan, &bank.name);
+        sharing(bank, part, carried, &mut at);
     }
+}
+
+/// Greatest current through a bank's terminals, of charge or discharge.
+pub(in crate::site) fn carried(site: &Site, plan: &Plan, name: &str) -> ElectricCurrent {
+    site.circuits
+        .iter()
+        .zip(&plan.circuits)
+        .filter(|(c, _)| c.from == name || c.to == name)
+        .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current))
+        .sum()
 }
 
 /// Greatest current out of a bank.
@@ -63,7 +78,12 @@ pub(in crate::site) fn drawn(site: &Site, plan: &Plan, name: &str) -> ElectricCu
         .iter()
         .zip(&plan.circuits)
         .filter(|(c, _)| c.from == name || c.to == name)
-        .filter_map(|(_, p)| p.as_ref().map(|p| p.judgement.current))
+        .filter_map(|(_, p)| p.as_ref())
+        .map(|p| {
+            // What its sources drive into it is charge, not discharge.
+            let amps = ElectricCurrent::new::<ampere>(p.flow.low_current.unwrap_or(0.0));
+            if p.flow.charged { amps } else { p.judgement.current }
+        })
         .sum()
 }
 
@@ -87,23 +107,39 @@ fn capacity(
     if duty.daily.value <= 0.0 {
         return;
     }
-    match needed(chemistry, &duty) {
-        Ok((need, _, _)) if bank.capacity < need * (1.0 - 1e-9) => at.nonconforming(
+    let mut rated = String::new();
+    let held = needed(chemistry, &duty).map(|(need, time, _)| {
+        // A shorter draw than that of the rating yields less; a longer one is no credit.
+        let less = part.rate.zip(time).filter(|(rate, time)| time < rate).and_then(|(rate, time)| {
+            let exponent = Ratio::new::<ratio>(data(chemistry).peukert.value.1);
+            let less = hour_rate_capacity(bank.capacity, rate, time, exponent).ok()?;
+            rated = format!(
+                " in {} h, {} Ah by its rating at {} h",
+                digits(time.get::<hour>()),
+                digits(bank.capacity.get::<ampere_hour>()),
+                digits(rate.get::<hour>())
+            );
+            Some(less)
+        });
+        (need, less.unwrap_or(bank.capacity))
+    });
+    match held {
+        Ok((need, holds)) if holds < need * (1.0 - 1e-9) => at.nonconforming(
             ("R12", "bank-too-small"),
             format!(
-                "{} Ah, at least {} Ah for {} Ah a day over {} d",
-                digits(bank.capacity.get::<ampere_hour>()),
+                "{} Ah{rated}, at least {} Ah for {} Ah a day over {} d",
+                digits(holds.get::<ampere_hour>()),
                 digits(need.get::<ampere_hour>()),
                 digits(duty.daily.get::<ampere_hour>()),
                 digits(duty.autonomy.get::<day>())
             ),
             "use a larger bank, less load, or state a shorter autonomy",
         ),
-        Ok((need, _, _)) => at.pass(
+        Ok((need, holds)) => at.pass(
             "R12",
             &format!(
-                "{} Ah, at least {} Ah for {} Ah a day over {} d ({})",
-                digits(bank.capacity.get::<ampere_hour>()),
+                "{} Ah{rated}, at least {} Ah for {} Ah a day over {} d ({})",
+                digits(holds.get::<ampere_hour>()),
                 digits(need.get::<ampere_hour>()),
                 digits(duty.daily.get::<ampere_hour>()),
                 digits(duty.autonomy.get::<day>()),
@@ -165,7 +201,7 @@ fn cold(
             ),
         ),
         Err(error) => {
-            at.danger(("R13", "electrolyte-may-freeze"), format!("{error}"), "keep the bank warmer")
+            at.danger(("R13", "electrolyte-may-freeze"), format!("{error}"), "keep the bank warmer");
         }
     }
     let from = part.charge_from.map(|t| t.get::<degree_celsius>());
@@ -179,14 +215,14 @@ fn cold(
         return;
     }
     let daily = demand.map(|d| d.greatest_day().charge(bank.nominal)).filter(|q| q.value > 0.0);
-    let left = cold_fraction(chemistry, coldest).map_or(0.5, |f| f.value.get::<ratio>());
+    let left = part.cold_capacity.or_else(|| capacity_left(chemistry, coldest).ok().map(|left| left.value));
     let lasts = daily.and_then(|daily_demand| {
         cold_spell(&ColdSpell {
             chemistry,
             capacity: bank.capacity,
             start: StateOfCharge::new(1.0).ok()?,
             temperature: coldest,
-            cold_fraction: Ratio::new::<ratio>(left),
+            cold_fraction: left?,
             daily_demand,
             margin,
         })
@@ -197,7 +233,7 @@ fn cold(
         format!(
             "at {} °C, its coldest, it takes no charge{}",
             digits(celsius),
-            lasts.map_or_else(alloc::string::String::new, |o| format!(
+            lasts.map_or_else(String::new, |o| format!(
                 ": the loads empty it in {} d",
                 digits(o.until_disconnect.get::<day>())
             ))
@@ -253,12 +289,12 @@ fn disconnects(
                 digits(asked.disconnect.get::<volt>())
             ),
             Some(asked.citation),
-            "raise it: under load the bank is emptier than the voltage says",
+            "raise it: even while all loads draw, the bank is emptier there than it may be, and more so under few",
         ),
         Ok(asked) => at.pass(
             "R14",
             &format!(
-                "disconnected at {} V, at least {} V",
+                "disconnected at {} V, at least {} V less one per cent of nominal",
                 digits(own.get::<volt>()),
                 digits(asked.disconnect.get::<volt>())
             ),
@@ -278,21 +314,29 @@ fn disconnects(
     }
     match part.reconnect {
         None => at.unmade(("R14", "reconnect-not-stated"), "reconnect voltage; state reconnect"),
-        Some(back) => match asked {
-            Ok(asked) if back.get::<volt>() < own.get::<volt>() + 0.025 * bank.nominal.get::<volt>() => at
-                .tell(
+        Some(back) => {
+            let apart = own.get::<volt>() + HYSTERESIS * bank.nominal.get::<volt>();
+            // Without loads it recovers to its voltage at rest, and that alone must not take them back.
+            let rest = asked.map_or(f64::NEG_INFINITY, |asked| asked.at_rest.get::<volt>());
+            let volts = back.get::<volt>();
+            if volts < apart.max(rest) - HAIR_V {
+                at.tell(
                     Severity::Nonconforming,
                     ("R14", "reconnect-too-near"),
                     format!(
-                        "reconnected at {} V, disconnected at {} V: it switches to and fro",
-                        digits(back.get::<volt>()),
+                        "reconnected at {} V, at least {} V: disconnected at {} V it recovers by itself, and switches to \
+                         and fro",
+                        digits(volts),
+                        digits(apart.max(rest)),
                         digits(own.get::<volt>())
                     ),
-                    Some(asked.citation),
+                    Some(DISCONNECT),
                     "raise the reconnect voltage",
-                ),
-            _ => at.pass("R14", &format!("reconnected at {} V", digits(back.get::<volt>()))),
-        },
+                );
+            } else {
+                at.pass("R14", &format!("reconnected at {} V", digits(volts)));
+            }
+        }
     }
 }
 
@@ -303,6 +347,12 @@ fn limits(bank: &BankEntry, part: &BankPart, at: &mut At<'_>) {
             ("R15", "too-many-strings"),
             format!("{} strings in parallel, at most {most} by its maker", bank.strings),
             "use batteries of greater capacity",
+        );
+    }
+    if part.max_series.is_some() && bank.series == 0 {
+        at.unmade(
+            ("R15", "series-not-checked"),
+            "packs in series against what their maker admits; state series or unit",
         );
     }
     if let Some(most) = part.max_series.filter(|&most| bank.series > most) {
@@ -337,15 +387,24 @@ fn ventilation(bank: &BankEntry, chemistry: Chemistry, part: &BankPart, at: &mut
             Some(GASSING),
             "put it in a ventilated room or box of its own",
         ),
-        Some(Room::Engine) => at.danger(
+        Some(Room::Engine) if vented => at.danger(
             ("R20", "bank-in-engine-space"),
             format!("{} cells gas beside what can ignite it", chemistry.word()),
             "put it in a ventilated box away from engine and fuel",
+        ),
+        Some(Room::Engine) => at.advice(
+            ("R20", "bank-in-engine-space"),
+            format!("{} cells age fast in the heat, and gas when they are overcharged", chemistry.word()),
+            "put it in a cooler place, and let its charger measure its temperature",
         ),
         Some(Room::Outdoors) => {
             at.pass("R20", "stands outdoors");
             return;
         }
+        None if vented && !part.designed => at.unmade(
+            ("R20", "bank-space-not-stated"),
+            "whether people live or sleep, or an engine stands, where its cells gas; state space",
+        ),
         _ => {}
     }
     let hours = flow.get::<cubic_meter_per_hour>();
@@ -355,11 +414,11 @@ fn ventilation(bank: &BankEntry, chemistry: Chemistry, part: &BankPart, at: &mut
         part.air.map(|a| a.get::<cubic_meter_per_hour>()),
         part.opening.map(|a| a.get::<square_centimeter>()),
     ) {
-        (Some(air), _) if air >= hours => {
-            at.pass("R20", &format!("{} m³/h of air, at least {} m³/h", digits(air), digits(hours)))
+        (Some(air), _) if air >= hours * (1.0 - 1e-9) => {
+            at.pass("R20", &format!("{} m³/h of air, at least {} m³/h", digits(air), digits(hours)));
         }
-        (_, Some(own)) if own >= opening => {
-            at.pass("R20", &format!("two openings of {} cm², at least {} cm²", digits(own), digits(opening)))
+        (_, Some(own)) if own >= opening * (1.0 - 1e-9) => {
+            at.pass("R20", &format!("two openings of {} cm², at least {} cm²", digits(own), digits(opening)));
         }
         (None, None) if part.designed => at.pass("R20", &format!("to be ventilated by {words}")),
         (None, None) => at.unmade(
@@ -412,7 +471,7 @@ pub(in crate::site) fn sharing(bank: &BankEntry, part: &BankPart, drawn: Electri
                 "{strings} strings taken off {}",
                 if take_off == TakeOff::OneEnd { "at one end" } else { "diagonally: for two only" }
             ),
-            "lead equal cables from every string to a busbar",
+            "take two strings off diagonally, and lead equal cables from each of more than two to a busbar",
         );
     }
     if strings > 2 && part.string_device.is_none() && !designed {
@@ -423,6 +482,11 @@ pub(in crate::site) fn sharing(bank: &BankEntry, part: &BankPart, drawn: Electri
             ),
             "fit a device in every string, and state string_device",
         );
+    }
+    if take_off == TakeOff::Busbar {
+        at.pass("R15", &format!("{strings} strings led by equal leads to a busbar share alike"));
+        string_device(part, drawn / f64::from(bank.strings), at);
+        return;
     }
     let Some(resistance) = part.internal_resistance.map(|r| r * f64::from(bank.strings)) else {
         at.unmade(
@@ -440,20 +504,14 @@ pub(in crate::site) fn sharing(bank: &BankEntry, part: &BankPart, drawn: Electri
         return;
     };
     let whole = link + joint * 2.0;
-    let own = if take_off == TakeOff::Busbar { resistance + whole * 2.0 } else { resistance };
-    let source = StringSource { emf: bank.nominal, resistance: own };
-    let links = if take_off == TakeOff::Busbar {
-        Vec::new()
-    } else {
-        vec![Link { positive: whole, negative: whole }; strings - 1]
-    };
+    let source = StringSource { emf: bank.nominal, resistance };
+    let links = vec![Link { positive: whole, negative: whole }; strings - 1];
     let mut shares = vec![StringShare::default(); strings];
     let current = if drawn.value > 0.0 { drawn } else { ElectricCurrent::new::<ampere>(1.0) };
     match share(&vec![source; strings], &links, way, current, &mut shares) {
         Ok(result) => {
             let part_of = result.greatest_part.get::<ratio>();
-            let each: Vec<alloc::string::String> =
-                shares.iter().map(|s| digits(s.current.get::<ampere>())).collect();
+            let each: Vec<String> = shares.iter().map(|s| digits(s.current.get::<ampere>())).collect();
             let text = format!(
                 "strings share {} A as {} A, links of {} mΩ with their joints, {} mΩ a string",
                 digits(current.get::<ampere>()),
@@ -468,20 +526,26 @@ pub(in crate::site) fn sharing(bank: &BankEntry, part: &BankPart, drawn: Electri
             } else {
                 at.pass("R15", &text);
             }
-            if let Some(device) = part.string_device
-                && device < result.greatest
-            {
-                at.nonconforming(
-                    ("R15", "string-device-too-small"),
-                    format!(
-                        "device of a string {} A, and the hardest string carries {} A",
-                        digits(device.get::<ampere>()),
-                        digits(result.greatest.get::<ampere>())
-                    ),
-                    "use a larger device, and leads that it protects",
-                );
+            if drawn.value > 0.0 {
+                string_device(part, result.greatest, at);
             }
         }
         Err(error) => at.unmade(("R15", "strings-not-checked"), &format!("how its strings share: {error}")),
+    }
+}
+
+/// The device of a string against what the hardest string carries.
+fn string_device(part: &BankPart, greatest: ElectricCurrent, at: &mut At<'_>) {
+    let Some(device) = part.string_device else { return };
+    if device < greatest {
+        at.nonconforming(
+            ("R15", "string-device-too-small"),
+            format!(
+                "device of a string {} A, and the hardest string carries {} A",
+                digits(device.get::<ampere>()),
+                digits(greatest.get::<ampere>())
+            ),
+            "use a larger device, and leads that it protects",
+        );
     }
 }

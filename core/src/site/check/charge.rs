@@ -1,6 +1,7 @@
 //! Charging: what all sources give together, their set points, compensation, sense, data links, load dump (R11, R13).
 
 use alloc::format;
+use alloc::string::String;
 use alloc::vec;
 use alloc::vec::Vec;
 
@@ -12,17 +13,35 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use super::At;
 use crate::battery::{Chemistry, Standing, VoltageRange, cell_set_points, charge_limit, set_points};
 use crate::generator::{ChargeSource, Contribution, LoadDump, SourceKind, source_sum};
+use crate::protection::End;
 use crate::quantity::{ElectricCurrent, ElectricPotential, ThermodynamicTemperature};
 use crate::site::complete::bank::temperatures;
 use crate::site::finding::{Findings, Severity, digits};
+use crate::site::graph::{Graph, Item};
 use crate::site::parts::{BankPart, GeneratorKind};
-use crate::site::system::{BankEntry, Charger, ChargerKind, Site};
+use crate::site::system::{BankEntry, Charger, ChargerKind, FeedKind, Site};
 
 /// Least compensation a cell of lead-acid wants, V/K: handbooks give 3 to 5 mV.
 const LEAST_COMPENSATION: f64 = -0.003;
-/// Span of cell temperatures over which charge without compensation errs little, K. Common practice, no source.
+/// How far from 25 °C cells may get while charge without compensation errs little, K. Common practice, no source.
 const STEADY_K: f64 = 10.0;
+/// Set points are worked out as cells times volts: rounding, as a part.
+const HAIR: f64 = 1e-9;
 const MILD_DEGC: f64 = 25.0;
+
+/// Greatest voltage that a cell of lithium bears while it is charged, V; beyond it lies damage and fire. Typical cell data
+/// sheets, recalled.
+const fn greatest_cell_V(chemistry: Chemistry) -> Option<f64> {
+    match chemistry {
+        Chemistry::Lfp => Some(3.65),
+        Chemistry::Nmc => Some(4.2),
+        Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel | Chemistry::NickelCadmium => None,
+    }
+}
+
+const fn dumps(bears: bool) -> LoadDump {
+    if bears { LoadDump::Bears } else { LoadDump::DoesNotBear }
+}
 
 /// A charger as a source.
 pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<ChargeSource> {
@@ -38,9 +57,10 @@ pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<Charg
             let volts =
                 charger.bank.and_then(|b| site.banks.get(b)).map_or(f64::NAN, |b| b.nominal.get::<volt>());
             let best = ElectricCurrent::new::<ampere>(rated / volts);
-            // Without an array, or with one that gives more, the controller's own output counts.
-            let nameplate = if rated > 0.0 && best < limit { best } else { limit };
-            ChargeSource { controller_limit: Some(limit), ..ChargeSource::new(SourceKind::Array, nameplate) }
+            // Its output limits it, in cold bright sun too; for hours it gives what the array is rated for.
+            let part = if rated > 0.0 && best < limit { Some(best / limit) } else { None };
+            let load_dump = site.controllers.get(index).and_then(|c| c.load_dump).map(dumps);
+            ChargeSource { lasting: part, load_dump, ..ChargeSource::new(SourceKind::Array, limit) }
         }
         ChargerKind::Generator(index) => {
             let part = site.generators.get(index)?;
@@ -51,8 +71,7 @@ pub(in crate::site) fn source_of(site: &Site, charger: &Charger) -> Option<Charg
                 GeneratorKind::Wind => SourceKind::Wind,
                 GeneratorKind::Hydro => SourceKind::Hydro,
             };
-            let load_dump =
-                part.load_dump.map(|bears| if bears { LoadDump::Bears } else { LoadDump::DoesNotBear });
+            let load_dump = part.load_dump.map(dumps);
             ChargeSource { lasting: part.hot_output, load_dump, ..ChargeSource::new(kind, limit) }
         }
     })
@@ -65,6 +84,13 @@ pub(super) fn banks(site: &Site, found: &mut Findings) {
         let chargers: Vec<&Charger> = site.chargers.iter().filter(|c| c.bank == Some(index)).collect();
         let mut at = At::new(found, format!("bank \"{}\"", bank.name), bank.line);
         if chargers.is_empty() {
+            if let Some(other) = charged_through(site, index) {
+                at.unmade(
+                    ("R11", "charging-not-checked"),
+                    &format!("it is charged through \"{other}\"; current and set points from there"),
+                );
+                continue;
+            }
             at.nonconforming(
                 ("R11", "bank-without-charge"),
                 "nothing charges it: no controller, generator or converter".into(),
@@ -76,7 +102,48 @@ pub(super) fn banks(site: &Site, found: &mut Findings) {
         for charger in chargers {
             let mut at = At::new(found, format!("\"{}\" into \"{}\"", charger.name, bank.name), charger.line);
             one(site, bank, chemistry, part, charger, &mut at);
+            own_end(site, charger, &mut at);
         }
+    }
+}
+
+/// What charges a bank that no charger names: a converter that feeds its network, or a bank joined to it that is charged.
+fn charged_through(site: &Site, bank: usize) -> Option<&str> {
+    let trees = Graph::new(site).trees();
+    let tree = trees.iter().find(|t| t.nodes.iter().any(|n| n.item == Item::Bank(bank)))?;
+    tree.nodes.iter().find_map(|node| {
+        let Item::Bank(other) = node.item else { return None };
+        let entry = site.banks.get(other)?;
+        let charges = match entry.kind {
+            FeedKind::Converter(_) => true,
+            FeedKind::Battery(_) => site.chargers.iter().any(|c| c.bank == Some(other)),
+            FeedKind::Array(_) => false,
+        };
+        (other != bank && charges).then_some(entry.name.as_str())
+    })
+}
+
+/// A machine that does not limit itself wants a device at its own end too (R7).
+fn own_end(site: &Site, charger: &Charger, at: &mut At<'_>) {
+    let ChargerKind::Generator(index) = charger.kind else { return };
+    let Some(part) = site.generators.get(index) else { return };
+    if part.kind != GeneratorKind::Alternator {
+        return;
+    }
+    let guarded = site
+        .circuits
+        .iter()
+        .filter(|c| c.from == charger.name)
+        .any(|c| c.devices.iter().any(|d| d.end == End::From));
+    if part.self_limiting {
+        at.pass("R7", "limits itself: its circuit is guarded at the bank's end");
+    } else if guarded {
+        at.pass("R7", "its circuit is guarded at its own end too");
+    } else {
+        at.unmade(
+            ("R7", "source-limit-not-stated"),
+            "whether it limits itself; state self_limiting = true, or a device at its own end",
+        );
     }
 }
 
@@ -95,7 +162,7 @@ fn sum(
             chargers.iter().filter(|c| c.limit.is_none()).map(|c| c.name.as_str()).collect();
         at.unmade(
             ("R11", "charger-limit-not-stated"),
-            &format!("charge current: {} states no output", names.join(", ")),
+            &format!("charge current: {} states no output; state output", names.join(", ")),
         );
         return;
     }
@@ -175,7 +242,7 @@ fn sum(
                 digits(least.get())
             ),
             Some(limit.citation),
-            "equalise from a stronger source now and then, or use a smaller bank",
+            "charge it from a stronger source now and then, or use a smaller bank",
         );
     }
     cold(site, chemistry, part, (greatest, capacity), at);
@@ -192,12 +259,10 @@ fn sum(
             at.pass("R11", "the sources keep to its limit without the data link");
         }
     }
-    if part.opens_under_charge {
-        dump(site, chargers, &each, at);
-    }
+    dump(site, chemistry, part, chargers, &each, at);
 }
 
-/// The sources against what the bank takes at its coldest.
+/// The sources against what the bank takes at its coldest, and whether it takes any at its warmest.
 fn cold(
     site: &Site,
     chemistry: Chemistry,
@@ -206,69 +271,101 @@ fn cold(
     at: &mut At<'_>,
 ) {
     let (coldest, warmest) = temperatures(site, part);
+    if charge_limit(chemistry, warmest).is_ok_and(|limit| limit.ceiling.get() <= 0.0)
+        && charge_limit(chemistry, coldest).is_ok_and(|limit| limit.ceiling.get() > 0.0)
+    {
+        at.nonconforming(
+            ("R11", "charge-blocked-by-heat"),
+            format!("at {} °C, its warmest, it takes no charge", digits(warmest.get::<degree_celsius>())),
+            "keep the bank cooler",
+        );
+    }
+    let Ok(limit) = charge_limit(chemistry, coldest) else { return };
+    let celsius = coldest.get::<degree_celsius>();
     let from = part.charge_from.map(|t| t.get::<degree_celsius>());
-    for (temperature, word) in [(coldest, "coldest"), (warmest, "warmest")] {
-        let celsius = temperature.get::<degree_celsius>();
-        let Ok(limit) = charge_limit(chemistry, temperature) else { continue };
-        let blocked = match (word, from) {
-            ("coldest", Some(from)) => celsius < from,
-            _ => limit.ceiling.get() <= 0.0,
+    let by_pack = from.is_some_and(|from| celsius >= from);
+    // Where it takes none at all it is told by the case of its own (R13); by the pack's own word it takes its own limit.
+    let blocked = if from.is_some() { !by_pack } else { limit.ceiling.get() <= 0.0 };
+    let most = limit.usual.get() * capacity;
+    let mild = ThermodynamicTemperature::new::<degree_celsius>(MILD_DEGC);
+    let as_warm = charge_limit(chemistry, mild).is_ok_and(|mild| mild.usual.get() <= limit.usual.get());
+    if blocked || as_warm || greatest <= most || (by_pack && part.greatest_charge.is_some()) {
+        return;
+    }
+    if part.greatest_charge.is_some() || limit.ceiling.get() <= 0.0 {
+        at.unmade(
+            ("R11", "charge-limit-in-cold-not-stated"),
+            &format!(
+                "{} A of all sources at {} °C, its coldest; state greatest_charge and charge_from, down to which it holds",
+                digits(greatest),
+                digits(celsius)
+            ),
+        );
+        return;
+    }
+    at.tell(
+        Severity::Nonconforming,
+        ("R11", "charge-above-limit-in-cold"),
+        format!(
+            "{} A of all sources at {} °C, its coldest, at most {} A there ({} /h)",
+            digits(greatest),
+            digits(celsius),
+            digits(most),
+            digits(limit.usual.get())
+        ),
+        Some(limit.citation),
+        "limit the sources by temperature, keep the bank milder, or state the maker's greatest_charge and charge_from",
+    );
+}
+
+/// A pack that opens while it is charged.
+fn dump(
+    site: &Site,
+    chemistry: Chemistry,
+    part: &BankPart,
+    chargers: &[&Charger],
+    each: &[Contribution],
+    at: &mut At<'_>,
+) {
+    for (charger, contribution) in chargers.iter().zip(each) {
+        let (stated, key) = match charger.kind {
+            ChargerKind::Generator(i) => {
+                (site.generators.get(i).and_then(|g| g.load_dump), "; state load_dump")
+            }
+            ChargerKind::Controller(i) => {
+                (site.controllers.get(i).and_then(|c| c.load_dump), "; state load_dump")
+            }
         };
-        if blocked {
-            // Told by the case of its own (R13).
-            if word == "warmest" {
-                at.nonconforming(
-                    ("R11", "charge-blocked-by-heat"),
-                    format!("at {} °C, its warmest, it takes no charge", digits(celsius)),
-                    "keep the bank cooler",
+        let name = &charger.name;
+        if !part.opens_under_charge {
+            // Packs of lithium open by themselves more often than not, and machines that turn do not bear it.
+            if stated.is_none()
+                && contribution.load_dump == LoadDump::DoesNotBear
+                && greatest_cell_V(chemistry).is_some()
+            {
+                at.unmade(
+                    ("R11", "load-dump-not-stated"),
+                    &format!(
+                        "whether the pack may open under charge, and \"{name}\" bears it; state opens_under_charge and \
+                         load_dump"
+                    ),
                 );
             }
             continue;
         }
-        // By the pack's own word it is charged there: its limit holds.
-        if part.greatest_charge.is_some() || (word == "coldest" && from.is_some()) {
-            continue;
-        }
-        let most = limit.usual.get() * capacity;
-        if greatest > most {
-            at.tell(
-                Severity::Nonconforming,
-                ("R11", "charge-above-limit-in-cold"),
-                format!(
-                    "{} A of all sources at {} °C, its {word}, at most {} A there ({} /h)",
-                    digits(greatest),
-                    digits(celsius),
-                    digits(most),
-                    digits(limit.usual.get())
-                ),
-                Some(limit.citation),
-                "limit the sources by temperature, keep the bank milder, or state the maker's greatest_charge",
-            );
-        }
-    }
-}
-
-/// A pack that opens while it is charged.
-fn dump(site: &Site, chargers: &[&Charger], each: &[Contribution], at: &mut At<'_>) {
-    for (charger, contribution) in chargers.iter().zip(each) {
-        let stated = match charger.kind {
-            ChargerKind::Generator(i) => site.generators.get(i).and_then(|g| g.load_dump),
-            ChargerKind::Controller(_) => None,
-        };
         match contribution.load_dump {
-            LoadDump::Bears => at.pass("R11", &format!("\"{}\" bears that the pack opens under charge", charger.name)),
+            LoadDump::Bears => at.pass("R11", &format!("\"{name}\" bears that the pack opens under charge")),
             LoadDump::DoesNotBear => at.danger(
                 ("R11", "load-dump"),
                 format!(
-                    "the pack may open under charge, and \"{}\" {} bear it: its voltage runs away into every load",
-                    charger.name,
+                    "the pack may open under charge, and \"{name}\" {} bear it: its voltage runs away into every load",
                     if stated.is_some() { "does not" } else { "is not known to" }
                 ),
                 "use a source or a clamp made for it, or a pack that keeps its terminals closed",
             ),
             LoadDump::Unknown => at.unmade(
                 ("R11", "load-dump-not-stated"),
-                &format!("what \"{}\" does when the pack opens under charge", charger.name),
+                &format!("what \"{name}\" does when the pack opens under charge{key}"),
             ),
         }
     }
@@ -291,11 +388,10 @@ fn one(
             &format!(
                 "to be set to absorption {} V{}{} at 25 °C",
                 digits(points.absorption.usual().get::<volt>()),
-                points.float.map_or_else(alloc::string::String::new, |f| format!(
-                    ", float {} V",
-                    digits(f.usual().get::<volt>())
-                )),
-                points.equalise.map_or_else(alloc::string::String::new, |e| format!(
+                points
+                    .float
+                    .map_or_else(String::new, |f| format!(", float {} V", digits(f.usual().get::<volt>()))),
+                points.equalise.map_or_else(String::new, |e| format!(
                     ", equalising {} V",
                     digits(e.usual().get::<volt>())
                 ))
@@ -315,13 +411,18 @@ fn one(
             ),
         );
     }
-    let lithium = matches!(chemistry, Chemistry::Lfp | Chemistry::Nmc);
-    let mut hold = |name: &str, stated: Option<ElectricPotential>, range: Option<VoltageRange>| {
+    let danger = greatest_cell_V(chemistry).map(|cell| cell * f64::from(bank.cells));
+    let mut hold = |name: &str, low: &str, stated: Option<ElectricPotential>, range: Option<VoltageRange>| {
         let Some(stated) = stated else { return };
         let volts = digits(stated.get::<volt>());
+        let severity = if danger.is_some_and(|most| stated.get::<volt>() > most * (1.0 + HAIR)) {
+            Severity::Danger
+        } else {
+            Severity::Nonconforming
+        };
         let Some(range) = range else {
             at.tell(
-                Severity::Nonconforming,
+                severity,
                 ("R11", "set-point-not-for-chemistry"),
                 format!("{name} {volts} V is set, and {} takes none", chemistry.word()),
                 Some(points.citation),
@@ -330,17 +431,25 @@ fn one(
             return;
         };
         let span = format!("{} to {} V", digits(range.low.get::<volt>()), digits(range.high.get::<volt>()));
-        match range.standing(stated) {
+        let wide = VoltageRange { low: range.low * (1.0 - HAIR), high: range.high * (1.0 + HAIR) };
+        match wide.standing(stated) {
+            // Lithium that is let fall after its charge is none the worse.
+            Standing::Below if danger.is_some() && name == "float" => {
+                at.pass(
+                    "R11",
+                    &format!("{name} {volts} V, below the usual {span} at 25 °C: it spares the cells"),
+                );
+            }
             Standing::Within => at.pass("R11", &format!("{name} {volts} V, usual {span} at 25 °C")),
             Standing::Below => at.tell(
                 Severity::Nonconforming,
                 ("R11", "set-point-low"),
-                format!("{name} {volts} V, usual {span} at 25 °C for {}: it is never full", chemistry.word()),
+                format!("{name} {volts} V, usual {span} at 25 °C for {}: {low}", chemistry.word()),
                 Some(points.citation),
                 "set it by the maker's figure",
             ),
             Standing::Above | Standing::NotANumber => at.tell(
-                if lithium { Severity::Danger } else { Severity::Nonconforming },
+                severity,
                 ("R11", "set-point-high"),
                 format!("{name} {volts} V, usual {span} at 25 °C for {}", chemistry.word()),
                 Some(points.citation),
@@ -348,9 +457,9 @@ fn one(
             ),
         }
     };
-    hold("absorption", charging.absorption, Some(points.absorption));
-    hold("float", charging.float, points.float);
-    hold("equalising", charging.equalise, points.equalise);
+    hold("absorption", "it is never full", charging.absorption, Some(points.absorption));
+    hold("float", "it is not kept full", charging.float, points.float);
+    hold("equalising", "it does not mix the acid", charging.equalise, points.equalise);
     compensation(site, chemistry, part, charger, at);
     reaches(site, bank, chemistry, part, charger, at);
 }
@@ -358,15 +467,16 @@ fn one(
 fn compensation(site: &Site, chemistry: Chemistry, part: &BankPart, charger: &Charger, at: &mut At<'_>) {
     let usual = cell_set_points(chemistry);
     let (coldest, warmest) = temperatures(site, part);
-    let span = warmest.get::<degree_celsius>() - coldest.get::<degree_celsius>();
+    // Set points are stated at 25 °C: what counts is how far the cells get from there.
+    let away = (MILD_DEGC - coldest.get::<degree_celsius>()).max(warmest.get::<degree_celsius>() - MILD_DEGC);
     let stated = charger.charging.compensation.map(|c| c.value);
     let wants = usual.compensation_V_per_K < 0.0;
     match stated {
-        None if wants && span > STEADY_K => at.unmade(
+        None if wants && away > STEADY_K => at.unmade(
             ("R11", "compensation-not-stated"),
             "compensation of the charge voltage for temperature; state compensation, 0 where there is none",
         ),
-        Some(own) if wants && span > STEADY_K && own > LEAST_COMPENSATION => at.tell(
+        Some(own) if wants && away > STEADY_K && own > LEAST_COMPENSATION => at.tell(
             Severity::Nonconforming,
             ("R11", "compensation-missing"),
             format!(

@@ -6,6 +6,7 @@ use uom::si::energy::watt_hour;
 use uom::si::power::watt;
 
 use super::At;
+use crate::cable::least_linear_resistance;
 use crate::converter::{Inverter, InverterVerdict, Suffices, Surge};
 use crate::load::HIGH_STANDING_SHARE;
 use crate::quantity::{ElectricPotential, ElectricalResistance, Time};
@@ -86,10 +87,16 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
         let lowest = planned.map_or_else(ElectricPotential::default, |p| p.judgement.end_voltage);
         let asked = demand(site, lowest, ac_loads(site, index));
         let inverter = inverter_of(entry, lowest).map(|plain| with_surge(entry, plain));
-        if let (Ok(inverter), Ok(asked)) = (inverter, &asked)
+        if let (Ok(inverter), Ok(asked)) = (inverter, asked)
             && asked.power.value > 0.0
-            && let Ok(verdict) = inverter.judge(asked)
+            && let Ok(verdict) = inverter.judge(&asked)
         {
+            if entry.surge.is_some() && entry.part.surge_time.is_none() && asked.starting > entry.power {
+                at.unmade(
+                    ("R16", "inverter-start-not-checked"),
+                    "for how long it bears its surge, against the largest start; state surge_time",
+                );
+            }
             judged(&mut at, &verdict);
         }
         inrush(site, entry, circuit, plan, &mut at);
@@ -97,41 +104,52 @@ pub(super) fn inverters(site: &Site, plan: &Plan, found: &mut Findings) {
 }
 
 fn with_surge(entry: &InverterEntry, plain: Inverter) -> Inverter {
-    // Without a stated time the maker's word for a surge is taken for the seconds of a start; common practice, no source.
-    let duration = entry.part.surge_time.unwrap_or_else(|| Time::new::<uom::si::time::second>(2.0));
+    // Without a stated time the power alone is compared; that the time is missing is told beside it.
+    let duration = entry.part.surge_time.unwrap_or_else(|| Time::new::<uom::si::time::hour>(1.0));
     Inverter { surge: entry.surge.map(|power| Surge { power, duration }), ..plain }
 }
 
 fn judged(at: &mut At<'_>, verdict: &InverterVerdict) {
-    let mut one = |what: &str, slug: &'static str, suffices: Suffices, remedy: &'static str| match suffices {
+    let mut one = |what: &str,
+                   slug: (&'static str, &'static str),
+                   suffices: Suffices,
+                   remedy: &'static str| match suffices {
         Suffices::Yes { given, asked } => at.pass(
             "R16",
-            &format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
+            &format!(
+                "{what}: {} VA, at least {} VA",
+                digits(given.get::<watt>()),
+                digits(asked.get::<watt>())
+            ),
         ),
         Suffices::No { given, asked } => at.nonconforming(
-            ("R16", slug),
-            format!("{what}: {} W, at least {} W", digits(given.get::<watt>()), digits(asked.get::<watt>())),
+            slug,
+            format!(
+                "{what}: {} VA, at least {} VA",
+                digits(given.get::<watt>()),
+                digits(asked.get::<watt>())
+            ),
             remedy,
         ),
         Suffices::TooShort { given, asked } => at.nonconforming(
-            ("R16", slug),
+            slug,
             format!("{what}: for {} s, the start lasts {} s", digits(given.value), digits(asked.value)),
             remedy,
         ),
         Suffices::NotChecked { missing } => {
-            let key = if missing == "surge rating" { "surge" } else { "surge_time" };
+            let key = if missing == "surge rating" { "surge" } else { "start_time of its loads" };
             at.unmade(("R16", "inverter-start-not-checked"), &format!("{what}: {missing}; state {key}"));
         }
     };
     one(
         "continuous power against its loads",
-        "inverter-overloaded",
+        ("R16", "inverter-overloaded"),
         if verdict.power.passes() { verdict.apparent } else { verdict.power },
         "use a larger inverter, or fewer loads at a time",
     );
     one(
         "power while the largest load starts",
-        "inverter-start-too-large",
+        ("R16", "inverter-start-too-large"),
         verdict.start,
         "use an inverter with more surge, or a soft start",
     );
@@ -159,9 +177,25 @@ fn inrush(site: &Site, entry: &InverterEntry, circuit: Option<usize>, plan: &Pla
         .fold(None, |least: Option<ElectricalResistance>, r| {
             Some(least.map_or(r, |l| if r < l { r } else { l }))
         });
-    let loop_ohms = planned.run.resistance_before + planned.judgement.resistance + behind.unwrap_or_default();
     let highest = planned.run.highest;
-    let peak = highest / loop_ohms;
+    // The greatest: what may flow at its circuit's beginning, through cold metal without joints (R6).
+    let upstream = planned
+        .run
+        .greatest_fault
+        .filter(|amps| amps.value > 0.0)
+        .map_or_else(|| planned.run.resistance_before + behind.unwrap_or_default(), |amps| highest / amps);
+    let cold = |conductor, length| {
+        least_linear_resistance(conductor, site.ambient.0).map_or_else(
+            |_| ElectricalResistance::default(),
+            |(r, _)| {
+                let run: ElectricalResistance = r * length;
+                run
+            },
+        )
+    };
+    let own = cold(&planned.positive, planned.run.positive_length)
+        + cold(&planned.negative, planned.run.negative_length);
+    let peak = highest / (upstream + own);
     let amps = peak.get::<uom::si::electric_current::ampere>();
     let rating =
         planned.fitted.first().map(|f| f.guard.device.rating.get::<uom::si::electric_current::ampere>());

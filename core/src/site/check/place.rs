@@ -108,7 +108,7 @@ pub(in crate::site) fn touch(site: &Site, volts: f64, limit: Option<(f64, Citati
     }
     match site.place.covered {
         Some(true) => {
-            at.pass("R19", &format!("{} V, above {} V: live parts are covered", digits(volts), digits(most)))
+            at.pass("R19", &format!("{} V, above {} V: live parts are covered", digits(volts), digits(most)));
         }
         Some(false) => at.tell(
             Severity::Danger,

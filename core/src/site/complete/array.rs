@@ -31,6 +31,8 @@ use crate::site::read::Problem;
 use crate::site::supply::{ARRAY_LOSS, day_energy, efficiency, module_power};
 use crate::site::system::{Array, BankEntry, Site};
 
+/// Sun-hours of the worst month below which the sun counts as low. Common practice, no source.
+const LOW_SUN_H: f64 = 3.0;
 const PRACTICE: Citation =
     Citation::new("common practice, no source", "dirt, mismatch, wiring", Seen::Practice);
 /// Most modules that are tried beyond the number that energy asks for: whole strings need a few more.
@@ -61,7 +63,7 @@ pub(super) fn take(document: &Document, site: &mut Site, problems: &mut Vec<Prob
         }
         let controller = match stated.controller.as_ref() {
             Some(name) => site.controllers.iter().position(|c| c.name == *name),
-            None => (site.controllers.len() == 1).then_some(0),
+            None => led_to(site, &stated.name).or((site.controllers.len() == 1).then_some(0)),
         };
         let (series, strings) = match (stated.modules, stated.series, stated.strings) {
             (_, Some(series), Some(strings)) => (series, strings),
@@ -88,6 +90,20 @@ pub(super) fn take(document: &Document, site: &mut Site, problems: &mut Vec<Prob
         });
     }
     open
+}
+
+/// The controller that an array's own circuits lead to, through a board between or not.
+fn led_to(site: &Site, array: &str) -> Option<usize> {
+    let mut here = array;
+    // A board between array and controller, and no chain of them without end.
+    for _ in 0..4 {
+        let circuit = site.circuits.iter().find(|c| c.from == here)?;
+        if let Some(found) = site.controllers.iter().position(|c| c.name == circuit.to) {
+            return Some(found);
+        }
+        here = &circuit.to;
+    }
+    None
 }
 
 /// What is asked of an array.
@@ -133,13 +149,24 @@ pub(super) fn design(
         let text = "a month without any sun carries a demand: no array can be sized for it; state the array and a generator";
         return Err(problem(weather.line, "[weather], in_plane".to_string(), text));
     }
+    // The table's words: weak sun asks for the ratio of critical loads.
+    let burden = |month: usize| {
+        let out = demand.mean.get(month).map_or(0.0, |d| d.total.get::<watt_hour>());
+        out / sun.get(month).map_or(1.0, Time::get::<hour>).max(1e-9)
+    };
+    let worst = (0..12).fold(0, |a, b| if burden(b) > burden(a) { b } else { a });
+    let low = sun.get(worst).is_some_and(|s| s.get::<hour>() < LOW_SUN_H);
     let wanted = Wanted {
         site,
         bank: entry,
         months: &demand.mean,
         sun,
-        class: if site.place.critical { LoadClass::Critical } else { LoadClass::NonCritical },
-        losses: Ratio::new::<ratio>(ARRAY_LOSS),
+        class: if site.place.critical || low { LoadClass::Critical } else { LoadClass::NonCritical },
+        losses: {
+            let shaded = stated.and_then(|a| a.shade).map_or(0.0, |s| s.get::<ratio>());
+            // More than nine tenths lost are refused by the sizing.
+            Ratio::new::<ratio>((1.0 - (1.0 - ARRAY_LOSS) * (1.0 - shaded)).min(0.9))
+        },
         charge_efficiency,
         shade: match stated.and_then(|a| a.shade) {
             Some(part) if part.value > 0.0 => Exposure::PartlyShaded,
@@ -259,25 +286,24 @@ fn take_choice(
         name
     };
     let array = stated.map_or_else(|| free("array"), |a| a.name.clone());
-    let index = match site.controllers.iter().position(|c| c.name == choice.controller.name) {
-        Some(index) => index,
-        None => {
-            let name = free("charge controller");
-            let part = ControllerPart {
-                model: Some(choice.controller.name.clone()),
-                name,
-                line: 0,
-                bank: Some(entry.name.clone()),
-                charging: Charging {
-                    // A designed controller is bought with leads that sense at the bank (R11).
-                    sense: choice.controller.charging.sense.or(Some(Sense::Bank)),
-                    ..choice.controller.charging
-                },
-                ..choice.controller
-            };
-            site.controllers.push(part);
-            site.controllers.len() - 1
-        }
+    let known = site.controllers.iter().position(|c| c.name == choice.controller.name);
+    let index = if let Some(index) = known {
+        index
+    } else {
+        let part = ControllerPart {
+            model: Some(choice.controller.name.clone()),
+            name: free("charge controller"),
+            line: 0,
+            bank: Some(entry.name.clone()),
+            charging: Charging {
+                // A designed controller is bought with leads that sense at the bank (R11).
+                sense: choice.controller.charging.sense.or(Some(Sense::Bank)),
+                ..choice.controller.charging
+            },
+            ..choice.controller
+        };
+        site.controllers.push(part);
+        site.controllers.len() - 1
     };
     reasons.arrays.push(ArrayReason {
         name: array.clone(),
@@ -438,7 +464,7 @@ fn clamped(
         ),
         step("sun-hours of a day there", found.sun_hours.get::<hour>(), "h", None),
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
-        step("lost to dirt, mismatch and wiring", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
+        step("lost to dirt, mismatch, wiring and shade", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
         step("charge efficiency of the bank", wanted.charge_efficiency.get::<ratio>(), "", None),
         step(
             "charge that the array must give in a day",
@@ -487,7 +513,7 @@ fn tracked(
         step("demand of a mean day in the worst month", found.demand.get::<watt_hour>(), "Wh", None),
         step("sun-hours of a day there", found.sun_hours.get::<hour>(), "h", None),
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
-        step("lost to dirt, mismatch and wiring", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
+        step("lost to dirt, mismatch, wiring and shade", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
         step("efficiency of the controller", efficiency.get::<ratio>(), "", None),
         step("charge efficiency of the bank", wanted.charge_efficiency.get::<ratio>(), "", None),
         step("energy that the array must give in a day", found.array_energy.get::<watt_hour>(), "Wh", None),
@@ -504,7 +530,7 @@ fn tracked(
 fn worst_month(wanted: &Wanted<'_>) -> usize {
     let burden = |month: usize| {
         let demand = wanted.months.get(month).map_or(0.0, |d| d.total.get::<watt_hour>());
-        demand / wanted.sun.get(month).map_or(1.0, |s| s.get::<hour>()).max(1e-9)
+        demand / wanted.sun.get(month).map_or(1.0, Time::get::<hour>).max(1e-9)
     };
     (0..12).fold(0, |worst, month| if burden(month) > burden(worst) { month } else { worst })
 }
@@ -572,6 +598,7 @@ fn plain_controllers() -> Vec<ControllerPart> {
                 efficiency: Some(Ratio::new::<ratio>(0.95)),
                 idle: Some(Power::new::<watt>(1.0)),
                 charging: Charging::default(),
+                load_dump: None,
                 bank: None,
                 board: None,
                 route: None,

@@ -52,13 +52,11 @@ pub(in crate::site) fn temperatures(
 /// Days without charge: the document's, else what is recommended for the class of load.
 pub(in crate::site) fn autonomy(site: &Site) -> (Time, Citation) {
     let class = if site.place.critical { LoadClass::Critical } else { LoadClass::NonCritical };
-    match site.place.autonomy {
-        Some(stated) => (stated, Citation::new("the site file", "autonomy", Seen::Stated)),
-        None => {
-            let held = autonomy_days(class);
-            (Time::new::<day>(held.value.0), held.citation)
-        }
+    if let Some(stated) = site.place.autonomy {
+        return (stated, Citation::new("the site file", "autonomy", Seen::Stated));
     }
+    let held = autonomy_days(class);
+    (Time::new::<day>(held.value.0), held.citation)
 }
 
 /// Whether its size is to be designed.
@@ -78,7 +76,7 @@ fn nominal(
     document: &Document,
     site: &Site,
     part: &BankPart,
-    peak: Power,
+    peak: &dyn Fn(ElectricPotential) -> Power,
 ) -> (ElectricPotential, Option<Step>) {
     let unit = part.unit.or_else(|| stock::battery(document, part).map(|b| b.nominal));
     if let Some(stated) = part.nominal {
@@ -100,14 +98,14 @@ fn nominal(
     let chosen = fitting
         .iter()
         .copied()
-        .find(|v| peak.get::<watt>() / v <= PRACTICAL_CURRENT_A)
+        .find(|&v| peak(ElectricPotential::new::<volt>(v)).get::<watt>() / v <= PRACTICAL_CURRENT_A)
         .or_else(|| fitting.last().copied())
         .unwrap_or(12.0);
     let step = Step {
         what: format!(
             "nominal voltage: the least of 12, 24 and 48 V that suits every load's range and keeps all loads together, {} W, \
              within {} A",
-            digits(peak.get::<watt>()),
+            digits(peak(ElectricPotential::new::<volt>(chosen)).get::<watt>()),
             digits(PRACTICAL_CURRENT_A)
         ),
         value: chosen,
@@ -151,7 +149,7 @@ pub(super) fn provisional(
     document: &Document,
     site: &Site,
     stated: &BankPart,
-    peak: Power,
+    peak: &dyn Fn(ElectricPotential) -> Power,
 ) -> (BankEntry, Vec<Step>) {
     let chemistry = chemistry_of(document, stated).unwrap_or(Chemistry::Flooded);
     let (nominal, step) = nominal(document, site, stated, peak);
@@ -273,6 +271,8 @@ pub(in crate::site) struct Duty {
     pub current: ElectricCurrent,
     pub depth: Option<Ratio>,
     pub daily_depth: Option<Ratio>,
+    /// Part of the capacity left at the coldest, by the maker.
+    pub left: Option<Ratio>,
     pub margin: Option<Ratio>,
     /// Least capacity that the sources may charge with all they give.
     pub least: Option<ElectricCharge>,
@@ -295,10 +295,18 @@ impl Duty {
             coldest: temperatures(site, part).0,
             current: demand.peak / nominal,
             depth: part.depth,
+            left: part.cold_capacity,
             daily_depth: part.daily_depth,
             margin: site.place.margin,
             least,
         }
+    }
+}
+
+impl Duty {
+    /// Current of the mean hour of its greatest day: that at which a disconnect has to hold for most of the time.
+    fn mean(&self) -> ElectricCurrent {
+        self.daily / Time::new::<day>(1.0)
     }
 }
 
@@ -332,6 +340,7 @@ pub(in crate::site) fn needed(
     let mut steps = alloc::vec![ah("demand of the greatest day", duty.daily, None), days];
     let (mut capacity, time) = if matches!(chemistry, Chemistry::Lfp | Chemistry::Nmc) {
         let mut need = LithiumNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
+        need.stated_fraction = duty.left;
         need.window = duty.depth.unwrap_or(need.window);
         need.margin = duty.margin.unwrap_or(need.margin);
         let found = lithium_capacity(&need)?;
@@ -345,6 +354,7 @@ pub(in crate::site) fn needed(
         (found.capacity, None)
     } else {
         let mut need = LeadAcidNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
+        need.stated_factor = duty.left.map(|left| Ratio::new::<ratio>(1.0) / left);
         need.greatest_depth = duty.depth.unwrap_or(need.greatest_depth);
         need.daily_depth = duty.daily_depth.unwrap_or(need.daily_depth);
         need.margin = duty.margin.unwrap_or(need.margin);
@@ -487,7 +497,7 @@ fn plain(
         capacity,
         cells,
     );
-    finish(site, &mut bank, Some(duty.current))?;
+    finish(site, &mut bank, Some(duty.mean()))?;
     Ok(Choice { bank, steps, price: None, what: format!("plain {}", chemistry.word()) })
 }
 
@@ -554,7 +564,7 @@ fn of_stock(
     );
     let capacity = part.capacity.unwrap_or(battery.capacity);
     let mut bank = entry(part, chemistry, nominal, capacity, found.cells);
-    finish(site, &mut bank, Some(duty.current)).map_err(words)?;
+    finish(site, &mut bank, Some(duty.mean())).map_err(words)?;
     if let Some(limit) = bank.greatest_discharge
         && limit < duty.current
     {
@@ -582,6 +592,9 @@ fn charges_in_the_cold(site: &Site, stated: &BankPart, battery: &StockBattery) -
             digits(coldest),
             digits(from)
         ));
+    }
+    if stated.cold_capacity.is_some() {
+        return Ok(());
     }
     let factor = match battery.chemistry {
         Chemistry::Lfp | Chemistry::Nmc => {

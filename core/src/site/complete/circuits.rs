@@ -96,7 +96,12 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
             ChargerKind::Generator(i) => site.generators.get(i).map(|g| (g.board.clone(), g.route, 0.0)),
         }
         .unwrap_or((None, None, 0.0));
-        let to = stated.unwrap_or_else(|| board.clone());
+        // Without any board the bank itself takes it, where its own circuits are written.
+        let bank = charger
+            .bank
+            .and_then(|b| site.banks.get(b))
+            .filter(|b| site.boards.is_empty() && joined(&b.name));
+        let to = stated.or_else(|| bank.map(|b| b.name.clone())).unwrap_or_else(|| board.clone());
         wish(format!("{} output", charger.name), &charger.name, &to, route, usual);
     }
     for feed in site.banks.iter().filter(|b| !from_taken.contains(&b.name)) {
@@ -147,7 +152,18 @@ pub(super) fn add(site: &mut Site, reasons: &mut Reasons) {
 
 /// The board that takes what states none: the first of the document, else one that is made.
 fn board_name(site: &Site) -> String {
-    if let Some(board) = site.boards.first() {
+    // The one that a bank leads to, by its circuit or by its own word, comes before an array's.
+    let of_bank = |name: &String| {
+        site.banks.iter().filter(|b| b.is_battery()).any(|b| {
+            b.part.as_ref().and_then(|p| p.board.as_ref()) == Some(name)
+                || site
+                    .circuits
+                    .iter()
+                    .any(|c| (c.from == b.name && c.to == *name) || (c.to == b.name && c.from == *name))
+        })
+    };
+    let first = site.boards.iter().find(|b| of_bank(&b.name)).or_else(|| site.boards.first());
+    if let Some(board) = first {
         return board.name.clone();
     }
     let taken = |name: &str| {

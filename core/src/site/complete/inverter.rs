@@ -22,7 +22,7 @@ use crate::site::read::Problem;
 use crate::site::system::{InverterEntry, Site};
 
 /// Figures of a plain inverter. Common practice, no source.
-const PLAIN_EFFICIENCY: f64 = 0.85;
+pub(super) const PLAIN_EFFICIENCY: f64 = 0.85;
 const PLAIN_IDLE: f64 = 0.01;
 /// Plain inverters are bought in steps, W.
 const PLAIN_STEP_W: f64 = 100.0;
@@ -57,6 +57,7 @@ fn entry(part: InverterPart, power: Power, efficiency: Ratio, designed: bool) ->
         line: part.line,
         power,
         surge: part.surge,
+        start: part.surge,
         efficiency,
         idle: part.idle,
         least: part.least,
@@ -65,6 +66,22 @@ fn entry(part: InverterPart, power: Power, efficiency: Ratio, designed: bool) ->
         terminal: part.terminal,
         part,
         designed,
+    }
+}
+
+/// What each inverter gives for seconds: no more than its loads ask for, where they are known.
+pub(super) fn limit_starts(site: &mut Site) {
+    for index in 0..site.inverters.len() {
+        let nominal = site.banks.first().map(|b| b.nominal).unwrap_or_default();
+        let asked = demand(site, nominal, ac_loads(site, index)).ok().map(|d| d.starting);
+        let Some(inverter) = site.inverters.get_mut(index) else { continue };
+        inverter.start = match (inverter.surge, asked) {
+            (Some(surge), Some(asked)) if asked.value > 0.0 && asked < surge => {
+                // It gives its continuous power at any rate.
+                Some(if asked > inverter.power { asked } else { inverter.power })
+            }
+            (surge, _) => surge,
+        };
     }
 }
 
@@ -81,10 +98,15 @@ pub(in crate::site) fn demand<'a>(
         Vec<Power>,
     ) = Default::default();
     let nothing = Power::default();
+    // The longest start counts; one that is not stated makes none of them known.
+    let mut duration: Option<Time> = Some(Time::default());
     for entry in loads {
         let load = load_of(site, entry, nominal)?;
         occasions.push(load.occasion(None)?);
         watts.push(load.power_at(nominal)?);
+        if let Some(start) = load.start {
+            duration = duration.zip(start.duration).map(|(a, b)| if b > a { b } else { a });
+        }
         let apparent = load.apparent_at(nominal)?;
         amperes.push(apparent);
         extra.push(apparent * load.start_extra()?);
@@ -96,7 +118,7 @@ pub(in crate::site) fn demand<'a>(
         power: running,
         apparent: apparent.running,
         starting: apparent.with_start.sum,
-        duration: None,
+        duration,
         ambient: Some(site.ambient.1),
     })
 }

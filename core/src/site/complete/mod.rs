@@ -16,7 +16,6 @@ use super::lines::{Rejected, Step};
 use super::model::Document;
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
-use uom::si::electric_potential::volt;
 use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
@@ -136,13 +135,15 @@ fn round(document: &Document, hint: &Hint) -> Result<(Site, Reasons), Problems> 
     let refused = |problems: Vec<Problem>| Err(Problems(problems, 0));
     let open_inverters = inverter::take(document, &mut site, &mut problems);
     let wishes = bank_wishes(document);
-    let peak = all_loads(&site);
+    let peak = |nominal| all_loads(&site, nominal);
     let mut first_steps = Vec::new();
+    let mut banks = Vec::new();
     for part in &wishes {
-        let (bank, steps) = bank::provisional(document, &site, part, peak);
-        site.banks.push(bank);
+        let (bank, steps) = bank::provisional(document, &site, part, &peak);
+        banks.push(bank);
         first_steps.push(steps);
     }
+    site.banks = banks;
     if let Some(nominal) = site.banks.first().map(|b| b.nominal)
         && let Err(problem) = inverter::design(document, &mut site, open_inverters, nominal, &mut reasons)
     {
@@ -151,6 +152,7 @@ fn round(document: &Document, hint: &Hint) -> Result<(Site, Reasons), Problems> 
     if !problems.is_empty() {
         return refused(problems);
     }
+    inverter::limit_starts(&mut site);
     // Which loads hang on which bank: the sizes do not matter for that.
     let mut plan = site.clone();
     add_chargers(&mut plan);
@@ -219,11 +221,12 @@ fn bank_wishes(document: &Document) -> Vec<BankPart> {
     alloc::vec![BankPart::unstated(name)]
 }
 
-/// All loads at once, at nominal voltage; those behind inverters through a usual efficiency.
-fn all_loads(site: &Site) -> Power {
+/// All loads at once at a nominal voltage; those behind inverters through a usual efficiency.
+fn all_loads(site: &Site, nominal: ElectricPotential) -> Power {
     let one = |load: &super::model::LoadEntry| {
-        let power = load.power.or_else(|| load.current.map(|a| a * ElectricPotential::new::<volt>(12.0)));
-        power.unwrap_or_default() * f64::from(load.count)
+        let power = load.power.or_else(|| load.current.map(|a| a * nominal)).unwrap_or_default();
+        let each = if load.ac { power / inverter::PLAIN_EFFICIENCY } else { power };
+        each * f64::from(load.count)
     };
     site.loads.iter().map(one).sum()
 }
@@ -281,11 +284,11 @@ fn problem(line: u32, place: String, text: impl Into<String>) -> Problem {
     Problem { line, place, text: text.into() }
 }
 
-/// The outputs that charge, and the banks they charge: the one named, else the only one.
+/// The outputs that charge, and the banks they charge: the one named, else the one they are joined to, else the only one.
 fn add_chargers(site: &mut Site) {
-    let bank = |name: Option<&String>| match name {
+    let bank = |name: Option<&String>, own: &str| match name {
         Some(name) => site.banks.iter().position(|b| b.name == *name),
-        None => site.banks.iter().position(BankEntry::is_battery),
+        None => joined_bank(site, own).or_else(|| site.banks.iter().position(BankEntry::is_battery)),
     };
     let mut chargers = Vec::new();
     for (index, controller) in site.controllers.iter().enumerate() {
@@ -295,7 +298,7 @@ fn add_chargers(site: &mut Site) {
             kind: ChargerKind::Controller(index),
             limit: controller.output,
             charging: controller.charging,
-            bank: bank(controller.bank.as_ref()),
+            bank: bank(controller.bank.as_ref(), &controller.name),
             stud: controller.stud,
         });
     }
@@ -306,11 +309,38 @@ fn add_chargers(site: &mut Site) {
             kind: ChargerKind::Generator(index),
             limit: generator.output,
             charging: generator.charging,
-            bank: bank(generator.bank.as_ref()),
+            bank: bank(generator.bank.as_ref(), &generator.name),
             stud: generator.stud,
         });
     }
     site.chargers = chargers;
+}
+
+/// The bank that a source's own circuits lead to.
+fn joined_bank(site: &Site, own: &str) -> Option<usize> {
+    let is_inlet = |name: &str| {
+        site.controllers.iter().any(|c| c.name == name) || site.converters.iter().any(|c| c.name == name)
+    };
+    let mut seen: Vec<&str> = alloc::vec![own];
+    let mut next = 0;
+    while let Some(&here) = seen.get(next) {
+        next += 1;
+        if let Some(bank) = site.banks.iter().position(|b| b.is_battery() && b.name == here) {
+            return Some(bank);
+        }
+        for circuit in &site.circuits {
+            // What enters a controller or converter does not come out on the same side.
+            let other = match (circuit.from == here, circuit.to == here && here != own) {
+                (true, _) if !is_inlet(&circuit.to) => circuit.to.as_str(),
+                (_, true) if !is_inlet(&circuit.from) => circuit.from.as_str(),
+                _ => continue,
+            };
+            if !seen.contains(&other) {
+                seen.push(other);
+            }
+        }
+    }
+    None
 }
 
 /// Outputs of converters and arrays as sources of their own networks.

@@ -32,6 +32,7 @@ pub(super) fn merged(stated: &ControllerPart, model: &ControllerPart) -> Control
             compensation: own.compensation.or(theirs.compensation),
             sense: own.sense.or(theirs.sense),
         },
+        load_dump: stated.load_dump.or(model.load_dump),
         stud: stated.stud.or(model.stud),
         price: stated.price.or(model.price),
         ..stated.clone()

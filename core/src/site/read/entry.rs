@@ -8,8 +8,9 @@ use alloc::vec::Vec;
 use toml::Spanned;
 use toml::de::{DeTable, DeValue};
 
-use super::keys::{CIRCUIT, Key, MEANT, Section};
+use super::keys::{CIRCUIT, Key, Section};
 use super::log::{Cut, Log, Quoted, nearest};
+use super::meant::MEANT;
 
 /// A section of the file and where it stands.
 #[derive(Clone, Copy)]
@@ -86,8 +87,9 @@ impl<'d, 'l> Entry<'d, 'l> {
             return format!("'{found}' belongs to [[circuit]]; write it above the first {}", section.header);
         }
         let known = || section.keys().map(|known| known.name);
-        let meant = MEANT.iter().find(|&&(word, _)| word == name).map(|&(_, meant)| meant);
-        let meant = meant.filter(|meant| known().any(|known| known == *meant));
+        let is_known = |meant: &str| known().any(|known| known == meant);
+        let meant = MEANT.iter().find(|&&(word, meant)| word == name && is_known(meant));
+        let meant = meant.map(|&(_, meant)| meant);
         if let Some(word) = meant.or_else(|| nearest(name, known())) {
             self.meant.push(word);
             return format!("no key '{found}'; did you mean '{word}'?");

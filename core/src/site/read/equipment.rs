@@ -5,17 +5,22 @@ use alloc::format;
 
 use super::entry::Entry;
 use super::keys::{
-    BUSBAR, CONTINUOUS, COUNT, CURRENT, GREATEST, LEAST, LOAD_KIND, LOAD_KIND_WORDS, LUGS_ON_STUD, POWER,
-    START, STUD, TERMINAL, USE, USE_WORDS,
+    BUSBAR, CONTINUOUS, COUNT, CURRENT, GREATEST, Key, LEAST, LOAD_KIND, LOAD_KIND_WORDS, LUGS_ON_STUD,
+    POWER, START, STUD, TERMINAL, USE, USE_WORDS,
 };
 use super::plant::named;
 use super::plant_keys::{
-    AC, BOARD_NAME, INVERTER_NAME, PAST_DISCONNECT, POWER_FACTOR, PRIORITY, ROUTE, STANDING, START_POWER,
+    AC, BOARD_NAME, INVERTER_NAME, PAST_DISCONNECT, POWER_FACTOR, PRIORITY, ROUTE, START_POWER, START_TIME,
 };
-use super::times::use_of;
+use super::times::{is_standing, use_of};
 use crate::quantity::ElectricPotential;
 use crate::rules::LoadUse;
 use crate::site::model::{Board, LoadEntry, LoadKind};
+
+/// Keys of loads on DC, and of AC loads.
+const DC_ONLY: &[&Key] =
+    &[&CURRENT, &START, &LEAST, &GREATEST, &STUD, &TERMINAL, &PAST_DISCONNECT, &BOARD_NAME, &ROUTE];
+const AC_ONLY: &[&Key] = &[&START_POWER, &START_TIME, &POWER_FACTOR, &INVERTER_NAME];
 
 pub(super) fn board(entry: &mut Entry<'_, '_>) -> Option<Board> {
     let name = entry.name();
@@ -51,29 +56,27 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
         ),
         _ => {}
     }
+    entry.ordered(&CURRENT, current, &START, start);
     let ac = entry.flag(&AC, false);
     let start_power = entry.quantity(&START_POWER);
+    let start_time = entry.quantity(&START_TIME);
+    entry.ordered(&POWER, power, &START_POWER, start_power);
     let power_factor = entry.quantity(&POWER_FACTOR);
     let inverter = named(entry, &INVERTER_NAME);
-    if ac {
-        for key in [&CURRENT, &START, &LEAST, &GREATEST] {
-            if entry.has(key) {
-                entry.problem(
-                    key,
-                    "it belongs to a load on DC; an AC load states power and start_power".to_owned(),
-                );
-            }
-        }
+    let (others, whose) = if ac {
+        (DC_ONLY, "a load on DC; an AC load states power and start_power")
     } else {
-        for key in [&START_POWER, &POWER_FACTOR, &INVERTER_NAME] {
-            if entry.has(key) {
-                entry.problem(key, "it belongs to an AC load; write ac = true, or take it out".to_owned());
-            }
+        (AC_ONLY, "an AC load; write ac = true, or take it out")
+    };
+    let has_power = entry.has(&POWER);
+    for key in others {
+        // A current beside a power is reported as such.
+        if entry.has(key) && !(has_power && key.name == CURRENT.name) {
+            entry.problem(key, format!("it belongs to {whose}"));
         }
     }
     let by_default = if entry.has(&CURRENT) { LoadKind::Current } else { LoadKind::Power };
     Some(LoadEntry {
-        name: name?,
         line: entry.line(),
         power,
         current,
@@ -91,11 +94,13 @@ pub(super) fn load(entry: &mut Entry<'_, '_>) -> Option<LoadEntry> {
         inverter,
         power_factor,
         start_power,
-        standing: entry.flag(&STANDING, false),
+        start_time,
+        standing: is_standing(entry, continuous),
         priority: entry.count(&PRIORITY),
         past_disconnect: entry.flag(&PAST_DISCONNECT, false),
         board: named(entry, &BOARD_NAME),
         route: entry.quantity(&ROUTE),
+        name: name?,
     })
 }
 

@@ -122,8 +122,8 @@ pub(super) const CONTINUOUS: Key = flag("continuous");
 pub(super) const START: Key = key("start", "a current", "\"30 A\"", AMPERES);
 pub(super) const USE: Key = key("use", "a use", "\"lighting\"", ANY);
 
-pub(super) const FROM: Key = key("from", "the name of a bank or board", "\"house\"", ANY);
-pub(super) const TO: Key = key("to", "the name of a board, load, inverter or bank", "\"pump\"", ANY);
+pub(super) const FROM: Key = key("from", "the name of a bank, board or source", "\"house\"", ANY);
+pub(super) const TO: Key = key("to", "the name of what it feeds", "\"pump\"", ANY);
 pub(super) const ONE_WAY: Key = key("one_way", "a length", "\"2.5 m\"", METRES);
 pub(super) const POSITIVE_LENGTH: Key = key("positive_length", "a length", "\"2.5 m\"", METRES);
 pub(super) const NEGATIVE_LENGTH: Key = key("negative_length", "a length", "\"3 m\"", METRES);
@@ -307,23 +307,6 @@ pub(super) const RULES_OVERRIDE: Section = Section::new(
     &[],
     &[&CONTINUOUS_FACTOR, &OWN_DROP, &UNFUSED_LENGTH, &ENGINE_SPACE, &BUNDLING, &DEVICE_RATIO, &ALUMINIUM],
 );
-
-/// Words that people write for a key that has another name here.
-pub(super) const MEANT: [(&str, &str); 12] = [
-    // The length of what? Only the route, or each conductor, is unambiguous (R1).
-    ("length", "one_way"),
-    ("distance", "one_way"),
-    ("run", "one_way"),
-    ("area", "size"),
-    ("cross_section", "size"),
-    ("gauge", "size"),
-    ("voltage", "nominal"),
-    ("type", "kind"),
-    ("grouped", "bundled"),
-    ("temperature", "ambient"),
-    ("fuse", "device"),
-    ("breaker", "device"),
-];
 
 /// Words and what they stand for.
 pub(super) type Words<T> = &'static [(&'static str, T)];

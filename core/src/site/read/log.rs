@@ -69,13 +69,6 @@ impl Log {
         }
     }
 
-    /// A problem of the section whose header stands on a line.
-    pub(super) fn push_line(&mut self, line: u32, place: String, text: String) {
-        let index = usize::try_from(line.saturating_sub(1)).unwrap_or(usize::MAX);
-        let at = self.starts.get(index).copied().unwrap_or(0);
-        self.push(at, place, text);
-    }
-
     /// A problem of the whole file.
     pub(super) fn push_whole(&mut self, text: String) {
         self.keep(0, Problem::whole(text));

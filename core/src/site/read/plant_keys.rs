@@ -1,20 +1,18 @@
 //! The keys of the plant: place, weather, banks, arrays, controllers, generators, loads in time, readings, and the
-//! stock of them. The manner is that of [`super::keys`], which holds the keys of the wiring.
+//! stock of them. The manner is that of [`super::keys`], which holds the keys of the wiring; in which section each
+//! stands tells [`super::sections`].
 
 use super::keys::{
-    AIR, AMPERE_HOURS, AMPERES, ANY, CABLE, CAPACITY, CHEMISTRY, CONTINUOUS, COUNT, CURRENT, CUT_OFF,
-    EARTHING, EFFICIENCY, GREATEST, GREATEST_DISCHARGE, HIGHEST, IDLE, INTERNAL, Key, LEAST, LOAD_KIND, LUG,
-    NAME, NOMINAL, OHMS, PART, POWER, PRICE, RULES, Range, SHORT_CIRCUIT, SITE_AMBIENT, SITE_NAME, START,
-    STOCK_DEVICES, STRINGS, STUD, SURGE, Section, TERMINAL, USE, VOLTS, WATTS, Words, count, flag, key,
+    AIR, AMPERE_HOURS, AMPERES, ANY, Key, METRES, OHMS, PART, Range, VOLTS, WATTS, count, flag, key,
 };
 use crate::error::Allowed;
-use crate::site::parts::{ControllerKind, GeneratorKind, Monitoring, Room, Sense, TakeOff};
 
-const METRES: Range = super::keys::METRES;
 const DEGREE: f64 = core::f64::consts::PI / 180.0;
 const TIME_OF_DAY: Range = Range::new(Allowed::AboveUpTo(0.0, 24.0), "h").scaled(3600.0);
 const SUN: Range = Range::new(Allowed::Between(0.0, 15.0), "kWh/m2").scaled(3.6e6);
 const COEFFICIENT: Range = Range::new(Allowed::Between(-2.0, 2.0), "%/K").scaled(0.01);
+// Voltage and power fall as a module warms: a positive figure is a slip of the pen.
+const FALLING: Range = Range::new(Allowed::Between(-2.0, 0.0), "%/K").scaled(0.01);
 const WHOLE: Range = count(1.0, 100_000.0);
 
 // [site]
@@ -47,10 +45,14 @@ pub(super) const SURGE_PROTECTION: Key = flag("surge_protection");
 pub(super) const MAST: Key = flag("mast");
 
 // [weather]
-pub(super) const IN_PLANE: Key =
-    key("in_plane", "a list of twelve irradiations, January first", "\"2.1 kWh/m2\"", SUN);
+pub(super) const IN_PLANE: Key = key(
+    "in_plane",
+    "a list of twelve irradiations (January first)",
+    "[\"0.6 kWh/m2\", \"1.4 kWh/m2\", …]",
+    SUN,
+);
 pub(super) const MEANS: Key =
-    key("temperature", "a list of twelve temperatures, January first", "\"4 degC\"", AIR);
+    key("temperature", "a list of twelve temperatures (January first)", "[\"2 degC\", \"2 degC\", …]", AIR);
 pub(super) const COLDEST_MORNING: Key = key("coldest_morning", "a temperature", "\"-25 degC\"", AIR);
 
 // [[bank]]
@@ -65,6 +67,7 @@ pub(super) const GREATEST_CHARGE: Key = key("greatest_charge", "a current", "\"1
 pub(super) const CHARGE_FROM: Key = key("charge_from", "a temperature", "\"0 degC\"", AIR);
 pub(super) const CELLS_AT: Key =
     key("temperature", "a list of the least and the greatest temperature", "[\"5 degC\", \"30 degC\"]", AIR);
+pub(super) const COLD_CAPACITY: Key = key("cold_capacity", "a ratio", "\"60 %\"", PART);
 pub(super) const DEPTH: Key = key("depth", "a ratio", "\"80 %\"", PART);
 pub(super) const DAILY_DEPTH: Key = key("daily_depth", "a ratio", "\"20 %\"", PART);
 pub(super) const DISCONNECT: Key = key("disconnect", "a voltage", "\"22.8 V\"", VOLTS);
@@ -108,12 +111,11 @@ pub(super) const VOC: Key = key("voc", "a voltage", "\"22.1 V\"", VOLTS);
 pub(super) const ISC: Key = key("isc", "a current", "\"7.3 A\"", AMPERES);
 pub(super) const VMP: Key = key("vmp", "a voltage", "\"17.6 V\"", VOLTS);
 pub(super) const IMP: Key = key("imp", "a current", "\"6.8 A\"", AMPERES);
-pub(super) const VOC_COEFFICIENT: Key =
-    key("voc_coefficient", "a ratio per kelvin", "\"-0.3 %/K\"", COEFFICIENT);
+pub(super) const VOC_COEFFICIENT: Key = key("voc_coefficient", "a ratio per kelvin", "\"-0.3 %/K\"", FALLING);
 pub(super) const ISC_COEFFICIENT: Key =
     key("isc_coefficient", "a ratio per kelvin", "\"0.05 %/K\"", COEFFICIENT);
 pub(super) const POWER_COEFFICIENT: Key =
-    key("power_coefficient", "a ratio per kelvin", "\"-0.4 %/K\"", COEFFICIENT);
+    key("power_coefficient", "a ratio per kelvin", "\"-0.4 %/K\"", FALLING);
 pub(super) const NOCT: Key = key("noct", "a temperature", "\"45 degC\"", Range::celsius(20.0, 100.0));
 pub(super) const SERIES_FUSE: Key = key("series_fuse", "a current", "\"15 A\"", AMPERES);
 pub(super) const GREATEST_VOLTAGE: Key = key("greatest_voltage", "a voltage", "\"600 V\"", VOLTS);
@@ -178,6 +180,8 @@ pub(super) const PRIORITY: Key = key("priority", "a whole number", "1", count(1.
 pub(super) const AC: Key = flag("ac");
 pub(super) const INVERTER_NAME: Key = key("inverter", "the name of an inverter", "\"inverter\"", ANY);
 pub(super) const START_POWER: Key = key("start_power", "a power", "\"1440 W\"", WATTS);
+pub(super) const START_TIME: Key =
+    key("start_time", "a time", "\"0.5 s\"", Range::new(Allowed::AboveUpTo(0.0, 60.0), "s"));
 pub(super) const PAST_DISCONNECT: Key = flag("past_disconnect");
 
 // Readings
@@ -205,344 +209,3 @@ pub(super) const BATTERIES: Key = key("battery", "sections [[stock.battery]]", "
 pub(super) const STOCK_MODULES: Key = key("module", "sections [[stock.module]]", "", ANY);
 pub(super) const STOCK_CONTROLLERS: Key = key("controller", "sections [[stock.controller]]", "", ANY);
 pub(super) const STOCK_INVERTERS: Key = key("inverter", "sections [[stock.inverter]]", "", ANY);
-
-pub(super) const SITE: Section = Section::new(
-    "[site]",
-    &[&SITE_NAME, &RULES, &EARTHING, &SITE_AMBIENT],
-    &[
-        &LATITUDE,
-        &LONGITUDE,
-        &ALTITUDE,
-        &AUTONOMY,
-        &CRITICAL,
-        &LOSSES,
-        &MARGIN,
-        &BONDS,
-        &BONDING,
-        &MONITORING,
-        &COVERED,
-        &SURGE_PROTECTION,
-        &MAST,
-    ],
-);
-pub(super) const WEATHER: Section = Section::new("[weather]", &[&IN_PLANE], &[&MEANS, &COLDEST_MORNING]);
-pub(super) const BANK: Section = Section::new(
-    "[[bank]]",
-    &[&NAME],
-    &[
-        &BATTERY,
-        &CHEMISTRY,
-        &NOMINAL,
-        &CAPACITY,
-        &UNIT,
-        &UNIT_CAPACITY,
-        &UNITS,
-        &SERIES,
-        &STRINGS,
-        &RATE,
-        &CUT_OFF,
-        &HIGHEST,
-        &SHORT_CIRCUIT,
-        &INTERNAL,
-        &GREATEST_DISCHARGE,
-        &GREATEST_CHARGE,
-        &CHARGE_FROM,
-        &STUD,
-        &CELLS_AT,
-        &DEPTH,
-        &DAILY_DEPTH,
-        &DISCONNECT,
-        &RECONNECT,
-        &TAKE_OFF,
-        &LINK,
-        &STRING_JOINT,
-        &STRING_DEVICE,
-        &MAX_SERIES,
-        &MAX_PARALLEL,
-        &MIXED,
-        &DATA_LINK,
-        &OPENS_UNDER_CHARGE,
-        &ROOM,
-        &AIR_FLOW,
-        &OPENING,
-        &BOARD_NAME,
-        &ROUTE,
-    ],
-);
-pub(super) const ARRAY: Section = Section::new(
-    "[[array]]",
-    &[&NAME],
-    &[
-        &MODULE,
-        &POWER,
-        &VOC,
-        &ISC,
-        &VMP,
-        &IMP,
-        &VOC_COEFFICIENT,
-        &ISC_COEFFICIENT,
-        &POWER_COEFFICIENT,
-        &NOCT,
-        &SERIES_FUSE,
-        &GREATEST_VOLTAGE,
-        &REAR_GAIN,
-        &CELLS,
-        &MODULES,
-        &SERIES,
-        &STRINGS,
-        &TILT,
-        &AZIMUTH,
-        &SHADE,
-        &CONTROLLER_NAME,
-        &STRING_FUSE,
-        &ISOLATOR,
-        &ISOLATOR_CURRENT,
-        &LOAD_BREAK,
-        &EXPOSED,
-        &ROUTE,
-    ],
-);
-pub(super) const CONTROLLER: Section = Section::new(
-    "[[controller]]",
-    &[&NAME],
-    &[
-        &MODEL,
-        &CONTROLLER_KIND,
-        &GREATEST_INPUT,
-        &INPUT_CURRENT,
-        &OPERATING,
-        &START_MARGIN,
-        &OUTPUT,
-        &NOMINALS,
-        &EFFICIENCY,
-        &IDLE,
-        &ABSORPTION,
-        &FLOAT,
-        &EQUALISE,
-        &COMPENSATION,
-        &SENSE,
-        &BANK_NAME,
-        &BOARD_NAME,
-        &ROUTE,
-        &STUD,
-    ],
-);
-pub(super) const GENERATOR: Section = Section::new(
-    "[[generator]]",
-    &[&NAME, &GENERATOR_KIND],
-    &[
-        &POWER,
-        &OUTPUT,
-        &HOT_OUTPUT,
-        &EFFICIENCY,
-        &POWER_FACTOR,
-        &HOURS,
-        &DAILY,
-        &LOAD_DUMP,
-        &SELF_LIMITING,
-        &ABSORPTION,
-        &FLOAT,
-        &EQUALISE,
-        &COMPENSATION,
-        &SENSE,
-        &BANK_NAME,
-        &BOARD_NAME,
-        &ROUTE,
-        &IDLE,
-        &STUD,
-    ],
-);
-pub(super) const CONVERTER: Section = Section::new(
-    "[[converter]]",
-    &[&NAME, &OUTPUT_VOLTAGE, &LIMIT, &EFFICIENCY],
-    &[&LEAST, &GREATEST, &ISOLATED, &IDLE, &STUD],
-);
-pub(super) const INVERTER: Section = Section::new(
-    "[[inverter]]",
-    &[&NAME],
-    &[
-        &MODEL,
-        &NOMINAL,
-        &POWER,
-        &SURGE,
-        &SURGE_TIME,
-        &EFFICIENCY,
-        &IDLE,
-        &LEAST,
-        &GREATEST,
-        &CAPACITANCE,
-        &PRECHARGE,
-        &STUD,
-        &TERMINAL,
-        &BOARD_NAME,
-        &ROUTE,
-    ],
-);
-pub(super) const LOAD: Section = Section::new(
-    "[[load]]",
-    &[&NAME],
-    &[
-        &POWER,
-        &CURRENT,
-        &LOAD_KIND,
-        &COUNT,
-        &CONTINUOUS,
-        &LEAST,
-        &GREATEST,
-        &START,
-        &USE,
-        &STUD,
-        &TERMINAL,
-        &HOURS,
-        &AT_TIMES,
-        &MONTHS,
-        &DAYS_PER_WEEK,
-        &DUTY,
-        &DUTY_HOT,
-        &STANDING,
-        &PRIORITY,
-        &AC,
-        &INVERTER_NAME,
-        &POWER_FACTOR,
-        &START_POWER,
-        &PAST_DISCONNECT,
-        &BOARD_NAME,
-        &ROUTE,
-    ],
-);
-pub(super) const READING: Section = Section::new(
-    "[[reading]]",
-    &[&NAME, &MEASURED_AT],
-    &[
-        &ON,
-        &READ_VOLTS,
-        &READ_DROP,
-        &READ_AMPS,
-        &READ_TEMPERATURE,
-        &DENSITY,
-        &REST,
-        &DELIVERED,
-        &ACCURACY,
-        &RESOLUTION,
-    ],
-);
-pub(super) const STOCK: Section = Section::new(
-    "[stock]",
-    &[],
-    &[&CABLE, &STOCK_DEVICES, &LUG, &BATTERIES, &STOCK_MODULES, &STOCK_CONTROLLERS, &STOCK_INVERTERS],
-);
-pub(super) const STOCK_BATTERY: Section = Section::new(
-    "[[stock.battery]]",
-    &[&NAME, &CHEMISTRY, &NOMINAL, &CAPACITY],
-    &[
-        &RATE,
-        &INTERNAL,
-        &SHORT_CIRCUIT,
-        &GREATEST_CHARGE,
-        &GREATEST_DISCHARGE,
-        &CHARGE_FROM,
-        &MAX_SERIES,
-        &MAX_PARALLEL,
-        &STUD,
-        &PRICE,
-        &SHELF_COUNT,
-    ],
-);
-pub(super) const STOCK_MODULE: Section = Section::new(
-    "[[stock.module]]",
-    &[&NAME, &POWER, &VOC, &ISC, &VMP, &IMP],
-    &[
-        &VOC_COEFFICIENT,
-        &ISC_COEFFICIENT,
-        &POWER_COEFFICIENT,
-        &NOCT,
-        &SERIES_FUSE,
-        &GREATEST_VOLTAGE,
-        &REAR_GAIN,
-        &CELLS,
-        &PRICE,
-        &SHELF_COUNT,
-    ],
-);
-pub(super) const STOCK_CONTROLLER: Section = Section::new(
-    "[[stock.controller]]",
-    &[&NAME, &CONTROLLER_KIND, &OUTPUT],
-    &[
-        &GREATEST_INPUT,
-        &INPUT_CURRENT,
-        &OPERATING,
-        &START_MARGIN,
-        &NOMINALS,
-        &EFFICIENCY,
-        &IDLE,
-        &COMPENSATION,
-        &SENSE,
-        &STUD,
-        &PRICE,
-    ],
-);
-pub(super) const STOCK_INVERTER: Section = Section::new(
-    "[[stock.inverter]]",
-    &[&NAME, &NOMINAL, &POWER, &EFFICIENCY],
-    &[&SURGE, &SURGE_TIME, &IDLE, &LEAST, &GREATEST, &CAPACITANCE, &PRECHARGE, &STUD, &TERMINAL, &PRICE],
-);
-
-/// Keys at the top of the file, as their headers are written.
-pub(super) const TOP: [(&str, &str); 15] = [
-    ("format", "format = 1"),
-    ("site", "[site]"),
-    ("weather", "[weather]"),
-    ("bank", "[[bank]]"),
-    ("array", "[[array]]"),
-    ("controller", "[[controller]]"),
-    ("generator", "[[generator]]"),
-    ("converter", "[[converter]]"),
-    ("board", "[[board]]"),
-    ("inverter", "[[inverter]]"),
-    ("load", "[[load]]"),
-    ("circuit", "[[circuit]]"),
-    ("reading", "[[reading]]"),
-    ("stock", "[stock]"),
-    ("rules", "[rules.override]"),
-];
-
-/// Sections that may stand several times.
-pub(super) const PLURAL: [&str; 10] = [
-    "bank",
-    "array",
-    "controller",
-    "generator",
-    "converter",
-    "board",
-    "inverter",
-    "load",
-    "circuit",
-    "reading",
-];
-
-pub(super) const MONITORING_WORDS: Words<Monitoring> = &[
-    ("insulation", Monitoring::Insulation),
-    ("earth_fault", Monitoring::EarthFault),
-    ("none", Monitoring::None),
-];
-pub(super) const TAKE_OFF_WORDS: Words<TakeOff> =
-    &[("one_end", TakeOff::OneEnd), ("diagonal", TakeOff::Diagonal), ("busbar", TakeOff::Busbar)];
-pub(super) const ROOM_WORDS: Words<Room> = &[
-    ("room", Room::Room),
-    ("living", Room::Living),
-    ("box", Room::Box),
-    ("engine", Room::Engine),
-    ("outdoors", Room::Outdoors),
-];
-pub(super) const SENSE_WORDS: Words<Sense> = &[("bank", Sense::Bank), ("terminals", Sense::Terminals)];
-pub(super) const CONTROLLER_WORDS: Words<ControllerKind> =
-    &[("pwm", ControllerKind::Pwm), ("mppt", ControllerKind::Mppt)];
-pub(super) const GENERATOR_WORDS: Words<GeneratorKind> = &[
-    ("engine", GeneratorKind::Engine),
-    ("alternator", GeneratorKind::Alternator),
-    ("shore", GeneratorKind::Shore),
-    ("wind", GeneratorKind::Wind),
-    ("hydro", GeneratorKind::Hydro),
-];
-pub(super) const MONTH_WORDS: [&str; 12] =
-    ["Jan", "Feb", "Mar", "Apr", "May", "Jun", "Jul", "Aug", "Sep", "Oct", "Nov", "Dec"];

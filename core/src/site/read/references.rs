@@ -1,229 +1,208 @@
-//! What one section says of another, and what a bank says of its own batteries: names that must exist, numbers that
-//! must agree.
+//! Names that one section states of another, and what depends on both: each at the place where it is written.
 
+use alloc::collections::{BTreeMap, BTreeSet};
 use alloc::format;
 use alloc::string::String;
+use alloc::vec::Vec;
 
-use uom::si::electric_charge::ampere_hour;
-use uom::si::electric_potential::volt;
-
+use super::entry::Found;
+use super::keys::{Key, POWER, Section};
 use super::log::{Cut, Log, Quoted, nearest};
-use crate::quantity::Figures;
-use crate::site::model::Document;
-use crate::site::parts::BankPart;
+use super::nodes::{Placed, text_of};
+use super::plant_keys::{
+    BANK_NAME, BATTERY, BOARD_NAME, CONTROLLER_NAME, INVERTER_NAME, MEASURED_AT, MODEL, MODULE, ON,
+};
+use super::sections::{
+    ARRAY, BANK, CONTROLLER, GENERATOR, INVERTER, LOAD, READING, STOCK_BATTERY, STOCK_CONTROLLER,
+    STOCK_INVERTER, STOCK_MODULE,
+};
 
-/// Nominal voltages may be labels: 12.8 V of LFP stand for 12 V.
-const LABEL: f64 = 0.1;
+/// Where the nearest name is no longer searched for: it is dear in a file where every name is wrong.
+const MOST_SEARCHED: usize = 200;
 
-pub(super) fn check(document: &Document, log: &mut Log) {
-    let banks = || document.banks.iter().map(|b| b.name.as_str());
-    let boards = || document.boards.iter().map(|b| b.name.as_str());
-    let mut refer =
-        |line: u32, place: String, key: &str, name: Option<&String>, what: &str, known: &[&str]| {
-            let Some(name) = name else { return };
-            if known.contains(&name.as_str()) {
-                return;
-            }
-            let sentence = match nearest(name, known.iter().copied()) {
-                Some(word) => format!("nothing is named '{}'; did you mean '{word}'?", Cut(name)),
-                None => format!("nothing is named '{}'; name {what} of this file", Cut(name)),
-            };
-            log.push_line(line, format!("{place}, {key}"), sentence);
-        };
-    let banks: alloc::vec::Vec<&str> = banks().collect();
-    let boards: alloc::vec::Vec<&str> = boards().collect();
-    let stock = &document.stock;
-    let batteries: alloc::vec::Vec<&str> = stock.batteries.iter().map(|b| b.name.as_str()).collect();
-    for bank in &document.banks {
-        let place = || format!("[[bank]] {}", Quoted(&bank.name));
-        refer(bank.line, place(), "battery", bank.battery.as_ref(), "a [[stock.battery]]", &batteries);
-        refer(bank.line, place(), "board", bank.board.as_ref(), "a board", &boards);
-    }
-    let modules: alloc::vec::Vec<&str> = stock.modules.iter().map(|b| b.name.as_str()).collect();
-    let controllers: alloc::vec::Vec<&str> = document.controllers.iter().map(|c| c.name.as_str()).collect();
-    for array in &document.arrays {
-        let place = || format!("[[array]] {}", Quoted(&array.name));
-        refer(array.line, place(), "module", array.module.as_ref(), "a [[stock.module]]", &modules);
-        refer(array.line, place(), "controller", array.controller.as_ref(), "a controller", &controllers);
-    }
-    let models: alloc::vec::Vec<&str> = stock.controllers.iter().map(|c| c.name.as_str()).collect();
-    for controller in &document.controllers {
-        let place = || format!("[[controller]] {}", Quoted(&controller.name));
-        refer(
-            controller.line,
-            place(),
-            "model",
-            controller.model.as_ref(),
-            "a [[stock.controller]]",
-            &models,
-        );
-        refer(controller.line, place(), "bank", controller.bank.as_ref(), "a bank", &banks);
-        refer(controller.line, place(), "board", controller.board.as_ref(), "a board", &boards);
-    }
-    for generator in &document.generators {
-        let place = || format!("[[generator]] {}", Quoted(&generator.name));
-        refer(generator.line, place(), "bank", generator.bank.as_ref(), "a bank", &banks);
-        refer(generator.line, place(), "board", generator.board.as_ref(), "a board", &boards);
-    }
-    let models: alloc::vec::Vec<&str> = stock.inverters.iter().map(|c| c.name.as_str()).collect();
-    for inverter in &document.inverters {
-        let place = || format!("[[inverter]] {}", Quoted(&inverter.name));
-        refer(inverter.line, place(), "model", inverter.model.as_ref(), "a [[stock.inverter]]", &models);
-        refer(inverter.line, place(), "board", inverter.board.as_ref(), "a board", &boards);
-    }
-    let inverters: alloc::vec::Vec<&str> = document.inverters.iter().map(|c| c.name.as_str()).collect();
-    for load in document.loads.iter().filter(|load| load.inverter.is_some() || load.board.is_some()) {
-        let place = || format!("[[load]] {}", Quoted(&load.name));
-        refer(load.line, place(), "inverter", load.inverter.as_ref(), "an inverter", &inverters);
-        refer(load.line, place(), "board", load.board.as_ref(), "a board", &boards);
-    }
-    readings(document, log);
-    ambient(document, log);
-    for bank in &document.banks {
-        batteries_of(document, bank, log);
-    }
+/// The sections of a document, as they are found.
+#[derive(Default)]
+pub(super) struct Sections<'d> {
+    pub(super) banks: Vec<Found<'d>>,
+    pub(super) arrays: Vec<Found<'d>>,
+    pub(super) controllers: Vec<Found<'d>>,
+    pub(super) generators: Vec<Found<'d>>,
+    pub(super) converters: Vec<Found<'d>>,
+    pub(super) boards: Vec<Found<'d>>,
+    pub(super) inverters: Vec<Found<'d>>,
+    pub(super) loads: Vec<Found<'d>>,
+    pub(super) circuits: Vec<Found<'d>>,
+    pub(super) readings: Vec<Found<'d>>,
+    pub(super) batteries: Vec<Found<'d>>,
+    pub(super) modules: Vec<Found<'d>>,
+    pub(super) controller_models: Vec<Found<'d>>,
+    pub(super) inverter_models: Vec<Found<'d>>,
 }
 
-/// Readings name things and loads of the file.
-fn readings(document: &Document, log: &mut Log) {
-    if document.readings.is_empty() {
+type Names<'d> = BTreeSet<&'d str>;
+
+fn names<'d>(lists: &[&[Found<'d>]]) -> Names<'d> {
+    let all = lists.iter().flat_map(|list| list.iter());
+    all.filter_map(|found| text_of(*found, "name")).map(|(name, _)| name).collect()
+}
+
+fn place(section: &Section, found: Found<'_>) -> String {
+    text_of(found, "name").map_or_else(
+        || String::from(section.header),
+        |(name, _)| format!("{} {}", section.header, Quoted(name)),
+    )
+}
+
+fn has(found: Found<'_>, key: &Key) -> bool {
+    found.table.contains_key(key.name)
+}
+
+fn is_ac(load: Found<'_>) -> bool {
+    load.table.get("ac").and_then(|value| value.get_ref().as_bool()).unwrap_or(false)
+}
+
+/// A name that must be one of those known.
+fn known(
+    (name, at): Placed<'_>,
+    place: impl Fn() -> String,
+    key: &Key,
+    what: &str,
+    known: &Names<'_>,
+    log: &mut Log,
+) {
+    if known.contains(name) {
         return;
     }
-    let loads: alloc::vec::Vec<&str> = document.loads.iter().map(|l| l.name.as_str()).collect();
-    let mut places = loads.clone();
-    places.extend(document.banks.iter().map(|x| x.name.as_str()));
-    places.extend(document.boards.iter().map(|x| x.name.as_str()));
-    places.extend(document.inverters.iter().map(|x| x.name.as_str()));
-    places.extend(document.circuits.iter().map(|x| x.name.as_str()));
-    places.extend(document.arrays.iter().map(|x| x.name.as_str()));
-    places.extend(document.controllers.iter().map(|x| x.name.as_str()));
-    places.extend(document.inverters.iter().map(|x| x.name.as_str()));
-    for reading in &document.readings {
-        let place = format!("[[reading]] {}", Quoted(&reading.name));
-        let at = core::iter::once(("at", &reading.at, &places));
-        for (key, name, known) in at.chain(reading.on.iter().map(|name| ("on", name, &loads))) {
-            if known.contains(&name.as_str()) {
-                continue;
+    let near = if log.count() < MOST_SEARCHED { nearest(name, known.iter().copied()) } else { None };
+    let sentence = match near {
+        Some(word) => format!("no {what} is named '{}'; did you mean '{}'?", Cut(name), Cut(word)),
+        None => format!("no {what} is named '{}'; name one of this file, or take the line out", Cut(name)),
+    };
+    log.push(at, format!("{}, {}", place(), key.name), sentence);
+}
+
+pub(super) fn check(sections: &Sections<'_>, log: &mut Log) {
+    let boards = names(&[&sections.boards]);
+    let banks = names(&[&sections.banks]);
+    let controllers = names(&[&sections.controllers]);
+    let inverters = names(&[&sections.inverters]);
+    let batteries = names(&[&sections.batteries]);
+    let modules = names(&[&sections.modules]);
+    let controller_models = names(&[&sections.controller_models]);
+    let inverter_models = names(&[&sections.inverter_models]);
+    let all: [(&[Found<'_>], &Section, &Key, &str, &Names<'_>); 13] = [
+        (&sections.banks, &BANK, &BATTERY, "[[stock.battery]]", &batteries),
+        (&sections.banks, &BANK, &BOARD_NAME, "board", &boards),
+        (&sections.arrays, &ARRAY, &MODULE, "[[stock.module]]", &modules),
+        (&sections.arrays, &ARRAY, &CONTROLLER_NAME, "controller", &controllers),
+        (&sections.controllers, &CONTROLLER, &MODEL, "[[stock.controller]]", &controller_models),
+        (&sections.controllers, &CONTROLLER, &BANK_NAME, "bank", &banks),
+        (&sections.controllers, &CONTROLLER, &BOARD_NAME, "board", &boards),
+        (&sections.generators, &GENERATOR, &BANK_NAME, "bank", &banks),
+        (&sections.generators, &GENERATOR, &BOARD_NAME, "board", &boards),
+        (&sections.inverters, &INVERTER, &MODEL, "[[stock.inverter]]", &inverter_models),
+        (&sections.inverters, &INVERTER, &BOARD_NAME, "board", &boards),
+        (&sections.loads, &LOAD, &INVERTER_NAME, "inverter", &inverters),
+        (&sections.loads, &LOAD, &BOARD_NAME, "board", &boards),
+    ];
+    for (list, section, key, what, names) in all {
+        for &found in list {
+            if let Some(name) = text_of(found, key.name) {
+                known(name, || place(section, found), key, what, names, log);
             }
-            let sentence = match nearest(name, known.iter().copied()) {
-                Some(word) => format!("nothing is named '{}'; did you mean '{word}'?", Cut(name)),
-                None => format!("nothing is named '{}'; name what was measured in this file", Cut(name)),
-            };
-            log.push_line(reading.line, format!("{place}, {key}"), sentence);
         }
     }
+    for (list, section) in [
+        (&sections.batteries, &STOCK_BATTERY),
+        (&sections.modules, &STOCK_MODULE),
+        (&sections.controller_models, &STOCK_CONTROLLER),
+        (&sections.inverter_models, &STOCK_INVERTER),
+        (&sections.readings, &READING),
+    ] {
+        once(list, section, log);
+    }
+    ac(sections, log);
+    readings(sections, log);
 }
 
-/// The coldest morning is no warmer than the site's least.
-fn ambient(document: &Document, log: &mut Log) {
-    let Some((weather, coldest)) = document.weather.as_ref().and_then(|w| Some((w, w.coldest_morning?)))
-    else {
-        return;
-    };
-    if coldest > document.ambient.1 {
-        let sentence = "the coldest morning is above the site's greatest ambient; mend the one that is wrong";
-        log.push_line(weather.line, String::from("[weather], coldest_morning"), String::from(sentence));
-    }
-}
-
-/// Voltage, number and capacity of a bank's batteries must agree with the bank's own.
-fn batteries_of(document: &Document, bank: &BankPart, log: &mut Log) {
-    let place = format!("[[bank]] {}", Quoted(&bank.name));
-    let stock =
-        bank.battery.as_ref().and_then(|name| document.stock.batteries.iter().find(|b| b.name == *name));
-    let chemistry = bank.chemistry.or(stock.map(|b| b.chemistry));
-    let unit = bank.unit.or(stock.map(|b| b.nominal)).map(|u| u.get::<volt>());
-    let nominal = bank.nominal.map(|n| n.get::<volt>());
-    let digits = |x: f64| format!("{}", Figures(x));
-    if chemistry.is_none() && bank.battery.is_none() && bank.capacity.is_some() {
-        let sentence = "key 'chemistry' is missing beside a stated capacity; write chemistry = \"flooded\", or name the \
-                        battery of the stock";
-        log.push_line(bank.line, place.clone(), String::from(sentence));
-    }
-    if let (Some(chemistry), Some(volts)) = (chemistry, unit.or(nominal))
-        && let Err(error) =
-            crate::battery::cells(chemistry, uom::si::f64::ElectricPotential::new::<volt>(volts))
-    {
-        log.push_line(bank.line, place.clone(), format!("{error}"));
-    }
-    let series = match (unit, nominal) {
-        (Some(unit), Some(nominal)) => {
-            let count = libm::round(nominal / unit);
-            if count < 1.0 || libm::fabs(count * unit - nominal) > LABEL * nominal {
-                let lower = libm::floor(nominal / unit).max(1.0);
-                log.push_line(
-                    bank.line,
-                    place.clone(),
-                    format!(
-                        "{} V are no whole number of batteries of {} V: {} in series make {} V, {} make {} V",
-                        digits(nominal),
-                        digits(unit),
-                        digits(lower),
-                        digits(lower * unit),
-                        digits(lower + 1.0),
-                        digits((lower + 1.0) * unit)
-                    ),
-                );
-                return;
-            }
-            Some(count)
-        }
-        _ => None,
-    };
-    if let (Some(count), Some(stated), Some(unit), Some(nominal)) =
-        (series, bank.series.map(f64::from), unit, nominal)
-        && libm::fabs(count - stated) > 0.5
-    {
-        log.push_line(
-            bank.line,
-            place.clone(),
-            format!(
-                "{} in series of {} V make {} V, not {} V; mend the number that is wrong",
-                digits(stated),
-                digits(unit),
-                digits(stated * unit),
-                digits(nominal)
-            ),
-        );
-        return;
-    }
-    let series = series.or(bank.series.map(f64::from));
-    if let (Some(series), Some(units)) = (series, bank.units.map(f64::from)) {
-        let strings = bank.strings.map_or_else(|| libm::round(units / series).max(1.0), f64::from);
-        if libm::fabs(strings * series - units) > 0.5 {
-            log.push_line(
-                bank.line,
-                place.clone(),
-                format!(
-                    "{} batteries do not make whole strings of {}; {} or {} do",
-                    digits(units),
-                    digits(series),
-                    digits(libm::floor(units / series).max(1.0) * series),
-                    digits((libm::floor(units / series) + 1.0) * series)
-                ),
+/// A name stands once among sections of a kind.
+fn once(list: &[Found<'_>], section: &Section, log: &mut Log) {
+    let mut first: BTreeMap<&str, usize> = BTreeMap::new();
+    for &found in list {
+        let Some((name, at)) = text_of(found, "name") else { continue };
+        let before = *first.entry(name).or_insert(found.at);
+        if before != found.at {
+            let sentence = format!(
+                "the name is taken by the {} of line {}; rename one",
+                section.header,
+                log.line(before)
             );
-            return;
+            log.push(at, format!("{}, name", place(section, found)), sentence);
         }
     }
-    let each = bank.unit_capacity.or(stock.map(|b| b.capacity)).map(|c| c.get::<ampere_hour>());
-    let strings = bank.strings.map(f64::from).or_else(|| {
-        let (units, series) = bank.units.zip(series)?;
-        Some(libm::round(f64::from(units) / series))
-    });
-    if let (Some(each), Some(strings), Some(whole)) =
-        (each, strings, bank.capacity.map(|c| c.get::<ampere_hour>()))
-        && libm::fabs(each * strings - whole) > 0.01 * whole
-    {
-        log.push_line(
-            bank.line,
-            place,
-            format!(
-                "{} strings of {} Ah make {} Ah, not {} Ah; mend the number that is wrong",
-                digits(strings),
-                digits(each),
-                digits(each * strings),
-                digits(whole)
-            ),
-        );
+}
+
+/// AC loads and the inverters that feed them.
+fn ac(sections: &Sections<'_>, log: &mut Log) {
+    let several = sections.inverters.len() > 1;
+    let mut fed: Names<'_> = BTreeSet::new();
+    let mut any = false;
+    for &load in sections.loads.iter().filter(|load| is_ac(**load)) {
+        any = true;
+        match text_of(load, INVERTER_NAME.name) {
+            Some((name, _)) => {
+                fed.insert(name);
+            }
+            None if several && !has(load, &INVERTER_NAME) => {
+                let sentence = format!(
+                    "which of the {} inverters feeds it is not stated; state it as 'inverter'",
+                    sections.inverters.len()
+                );
+                log.push(load.at, place(&LOAD, load), sentence);
+            }
+            None => {}
+        }
+    }
+    for &inverter in &sections.inverters {
+        let is_sized = has(inverter, &POWER) || has(inverter, &MODEL);
+        let feeds =
+            if several { text_of(inverter, "name").is_some_and(|(name, _)| fed.contains(name)) } else { any };
+        if !is_sized && !feeds {
+            let sentence =
+                "no AC load tells its power; state power, or the loads that it feeds with ac = true";
+            log.push(inverter.at, place(&INVERTER, inverter), String::from(sentence));
+        }
+    }
+}
+
+/// Readings are of things of the file.
+fn readings(sections: &Sections<'_>, log: &mut Log) {
+    if sections.readings.is_empty() {
+        return;
+    }
+    let loads = names(&[&sections.loads]);
+    // Of what sort each is, and whether what was read can be read there, tells the report.
+    let all = names(&[
+        &sections.banks,
+        &sections.boards,
+        &sections.loads,
+        &sections.inverters,
+        &sections.arrays,
+        &sections.controllers,
+        &sections.generators,
+        &sections.converters,
+        &sections.circuits,
+    ]);
+    for &reading in &sections.readings {
+        let here = || place(&READING, reading);
+        if let Some(at) = text_of(reading, MEASURED_AT.name) {
+            known(at, here, &MEASURED_AT, "part or circuit", &all, log);
+        }
+        let on = reading.table.get(ON.name).and_then(|value| value.get_ref().as_array());
+        for item in on.into_iter().flat_map(|list| list.iter()) {
+            if let Some(name) = item.get_ref().as_str() {
+                known((name, item.span().start), here, &ON, "load", &loads, log);
+            }
+        }
     }
 }

@@ -1,48 +1,57 @@
 //! What can be bought or lies on the shelf.
 
+use alloc::vec::Vec;
+
+use super::bank;
 use super::circuits::{device_supply, metal, polarity, terminal_range};
 use super::entry::{Entry, Found};
 use super::keys::{
     BREAKING, CABLE, FAMILY, FULL_RATED, INSULATION, LENGTH, LET_THROUGH_KEY, LUG, PRICE, RATINGS, SHEATHED,
-    SIZE, STOCK_CABLE, STOCK_DEVICE, STOCK_DEVICES, STOCK_LUG, STUD, TERMINAL,
+    SIZE, STOCK_CABLE, STOCK_DEVICE, STOCK_DEVICES, STOCK_LUG, STUD, Section, TERMINAL,
 };
 use super::log::Log;
-use super::plant;
-use super::plant_keys::{
-    BATTERIES, STOCK, STOCK_BATTERY, STOCK_CONTROLLER, STOCK_CONTROLLERS, STOCK_INVERTER, STOCK_INVERTERS,
-    STOCK_MODULE, STOCK_MODULES,
-};
+use super::modules;
+use super::plant_keys::{BATTERIES, STOCK_CONTROLLERS, STOCK_INVERTERS, STOCK_MODULES};
+use super::references::Sections;
+use super::sections::{STOCK, STOCK_BATTERY, STOCK_CONTROLLER, STOCK_INVERTER, STOCK_MODULE};
+use super::sources;
 use crate::cable::{Class, Coating, Material};
 use crate::site::model::{Stock, StockCable, StockDevice, StockLug};
 
 /// What could not be read is left out: its problems refuse the file in any case.
-pub(super) fn stock<'d>(text: &'d str, log: &mut Log, found: Found<'d>) -> Stock {
-    let mut entry = Entry::open(text, log, &STOCK, found, None);
+pub(super) fn stock<'d>(text: &'d str, log: &mut Log, at: Found<'d>, found: &mut Sections<'d>) -> Stock {
+    let mut entry = Entry::open(text, log, &STOCK, at, None);
     let cables = entry.sections(&CABLE, &STOCK_CABLE);
     let devices = entry.sections(&STOCK_DEVICES, &STOCK_DEVICE);
     let lugs = entry.sections(&LUG, &STOCK_LUG);
-    let batteries = entry.sections(&BATTERIES, &STOCK_BATTERY);
-    let modules = entry.sections(&STOCK_MODULES, &STOCK_MODULE);
-    let controllers = entry.sections(&STOCK_CONTROLLERS, &STOCK_CONTROLLER);
-    let inverters = entry.sections(&STOCK_INVERTERS, &STOCK_INVERTER);
+    found.batteries = entry.sections(&BATTERIES, &STOCK_BATTERY);
+    found.modules = entry.sections(&STOCK_MODULES, &STOCK_MODULE);
+    found.controller_models = entry.sections(&STOCK_CONTROLLERS, &STOCK_CONTROLLER);
+    found.inverter_models = entry.sections(&STOCK_INVERTERS, &STOCK_INVERTER);
     Stock {
-        cables: cables
-            .into_iter()
-            .filter_map(|found| cable(&mut Entry::open(text, log, &STOCK_CABLE, found, None)))
-            .collect(),
-        devices: devices
-            .into_iter()
-            .filter_map(|found| device(&mut Entry::open(text, log, &STOCK_DEVICE, found, None)))
-            .collect(),
-        lugs: lugs
-            .into_iter()
-            .filter_map(|found| lug(&mut Entry::open(text, log, &STOCK_LUG, found, None)))
-            .collect(),
-        batteries: plant::all(text, log, &STOCK_BATTERY, batteries, plant::battery),
-        modules: plant::all(text, log, &STOCK_MODULE, modules, plant::module),
-        controllers: plant::all(text, log, &STOCK_CONTROLLER, controllers, plant::controller),
-        inverters: plant::all(text, log, &STOCK_INVERTER, inverters, plant::inverter),
+        cables: all(text, log, &STOCK_CABLE, &cables, cable),
+        devices: all(text, log, &STOCK_DEVICE, &devices, device),
+        lugs: all(text, log, &STOCK_LUG, &lugs, lug),
+        batteries: all(text, log, &STOCK_BATTERY, &found.batteries, bank::battery),
+        modules: all(text, log, &STOCK_MODULE, &found.modules, modules::module),
+        controllers: all(text, log, &STOCK_CONTROLLER, &found.controller_models, |entry| {
+            sources::controller(entry, &[])
+        }),
+        inverters: all(text, log, &STOCK_INVERTER, &found.inverter_models, |entry| {
+            sources::inverter(entry, &[])
+        }),
     }
+}
+
+/// Every entry of a kind that can be read.
+fn all<'d, T>(
+    text: &'d str,
+    log: &mut Log,
+    section: &'static Section,
+    found: &[Found<'d>],
+    read: impl Fn(&mut Entry<'d, '_>) -> Option<T>,
+) -> Vec<T> {
+    found.iter().filter_map(|found| read(&mut Entry::open(text, log, section, *found, None))).collect()
 }
 
 fn cable(entry: &mut Entry<'_, '_>) -> Option<StockCable> {

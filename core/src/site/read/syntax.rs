@@ -10,7 +10,7 @@ use core::ops::Range;
 use toml::de::{DeTable, DeValue, Error};
 
 use super::log::{Cut, Log};
-use super::plant_keys::PLURAL;
+use super::sections::PLURAL;
 
 /// Above this size the first syntax error must be mended before the rest is listed: a text of a few MiB can
 /// hold millions, and each would take memory.

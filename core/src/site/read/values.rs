@@ -256,7 +256,8 @@ impl<'d> Entry<'d, '_> {
         }
     }
 
-    fn wrong_form(&mut self, key: &Key, value: &Spanned<DeValue<'_>>) {
+    /// Reports a value of another kind than the key needs.
+    pub(super) fn wrong_form(&mut self, key: &Key, value: &Spanned<DeValue<'_>>) {
         let such_as =
             if key.example.is_empty() { String::new() } else { format!(", such as {}", key.example) };
         let found = match value.get_ref() {

@@ -41,7 +41,8 @@ impl Groups {
         Self((0..count).collect())
     }
 
-    fn top(&mut self, mut index: usize) -> usize {
+    /// The node that stands for a group.
+    pub(super) fn top(&mut self, mut index: usize) -> usize {
         while let Some(&above) = self.0.get(index) {
             if above == index {
                 break;

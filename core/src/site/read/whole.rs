@@ -9,8 +9,9 @@ use toml::Spanned;
 use toml::de::{DeTable, DeValue};
 
 use super::Problems;
+use super::bank;
 use super::circuits::Circuits;
-use super::ends::{Kind, Node, Plan, Wire};
+use super::ends::Plan;
 use super::entry::{Entry, Found, section, sections};
 use super::equipment;
 use super::keys::{
@@ -19,11 +20,15 @@ use super::keys::{
     SITE_AMBIENT, Section, UNFUSED_LENGTH,
 };
 use super::log::{Cut, Log, nearest};
-use super::plant;
-use super::plant_keys::{
+use super::meant::MEANT_SECTIONS;
+use super::modules;
+use super::nodes::{Kind, Node, Wire};
+use super::plant::rising;
+use super::references::{self, Sections};
+use super::sections::{
     ARRAY, BANK, CONTROLLER, CONVERTER, GENERATOR, INVERTER, LOAD, READING, SITE, STOCK, TOP, WEATHER,
 };
-use super::references;
+use super::sources;
 use super::stock;
 use super::surroundings;
 use super::syntax;
@@ -76,62 +81,57 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Document> {
             "there is no section [site]; write one with name, rules, earthing and ambient".to_owned(),
         );
     }
-    let head = head.map(|found| head_of(&mut Entry::open(text, log, &SITE, found, None)));
+    let head = head.and_then(|found| head_of(&mut Entry::open(text, log, &SITE, found, None)));
+    let ambient = head.as_ref().map(|head| head.3);
     let (overrides, overrides_at) = top.overrides(log);
-    let stock = top.one("stock", &STOCK, log).map(|found| stock::stock(text, log, found));
+
+    let mut found = Sections {
+        banks: top.many("bank", &BANK, log),
+        arrays: top.many("array", &ARRAY, log),
+        controllers: top.many("controller", &CONTROLLER, log),
+        generators: top.many("generator", &GENERATOR, log),
+        converters: top.many("converter", &CONVERTER, log),
+        readings: top.many("reading", &READING, log),
+        boards: top.many("board", &BOARD, log),
+        inverters: top.many("inverter", &INVERTER, log),
+        loads: top.many("load", &LOAD, log),
+        circuits: top.many("circuit", &CIRCUIT, log),
+        ..Sections::default()
+    };
+    let stock = top.one("stock", &STOCK, log).map(|at| stock::stock(text, log, at, &mut found));
+    let stock = stock.unwrap_or_default();
+    if is_whole {
+        check_ends(&found, log);
+        references::check(&found, log);
+    }
 
     let weather = top.one("weather", &WEATHER, log);
-    let weather = weather.map(|found| times::weather(&mut Entry::open(text, log, &WEATHER, found, None)));
-
-    let banks = top.many("bank", &BANK, log);
-    let arrays = top.many("array", &ARRAY, log);
-    let controllers = top.many("controller", &CONTROLLER, log);
-    let generators = top.many("generator", &GENERATOR, log);
-    let converters = top.many("converter", &CONVERTER, log);
-    let readings = top.many("reading", &READING, log);
-    let boards = top.many("board", &BOARD, log);
-    let inverters = top.many("inverter", &INVERTER, log);
-    let loads = top.many("load", &LOAD, log);
-    let circuits = top.many("circuit", &CIRCUIT, log);
-
-    if is_whole {
-        let nodes = [
-            (Kind::Bank, &banks),
-            (Kind::Array, &arrays),
-            (Kind::Controller, &controllers),
-            (Kind::Generator, &generators),
-            (Kind::Converter, &converters),
-            (Kind::Board, &boards),
-            (Kind::Inverter, &inverters),
-            (Kind::Load, &loads),
-        ];
-        let nodes =
-            nodes.into_iter().flat_map(|(kind, list)| list.iter().filter_map(move |at| Node::of(kind, *at)));
-        Plan::new(nodes.collect(), circuits.iter().map(|found| Wire::of(*found)).collect()).check(log);
+    let has_weather = weather.is_some();
+    let weather =
+        weather.and_then(|at| times::weather(&mut Entry::open(text, log, &WEATHER, at, None), ambient));
+    let banks = read_all(text, log, &BANK, &found.banks, |entry| bank::bank(entry, &stock.batteries));
+    let arrays = read_all(text, log, &ARRAY, &found.arrays, modules::array);
+    let controllers = read_all(text, log, &CONTROLLER, &found.controllers, |entry| {
+        sources::controller(entry, &stock.controllers)
+    });
+    let generators = read_all(text, log, &GENERATOR, &found.generators, sources::generator);
+    let converters = read_all(text, log, &CONVERTER, &found.converters, sources::converter);
+    let readings = read_all(text, log, &READING, &found.readings, times::reading);
+    let boards = read_all(text, log, &BOARD, &found.boards, equipment::board);
+    let inverters =
+        read_all(text, log, &INVERTER, &found.inverters, |entry| sources::inverter(entry, &stock.inverters));
+    let loads = read_all(text, log, &LOAD, &found.loads, equipment::load);
+    for circuit in &found.circuits {
+        surroundings::check(ambient, *circuit, log);
     }
+    let mut reader = Circuits::new(text, &found.circuits);
+    let circuits: Vec<_> = found.circuits.iter().map(|circuit| reader.circuit(log, *circuit)).collect();
 
-    let banks = read_all(text, log, &BANK, &banks, plant::bank);
-    let arrays = read_all(text, log, &ARRAY, &arrays, plant::array);
-    let controllers = read_all(text, log, &CONTROLLER, &controllers, plant::controller);
-    let generators = read_all(text, log, &GENERATOR, &generators, plant::generator);
-    let converters = read_all(text, log, &CONVERTER, &converters, plant::converter);
-    let readings = read_all(text, log, &READING, &readings, times::reading);
-    let boards = read_all(text, log, &BOARD, &boards, equipment::board);
-    let inverters = read_all(text, log, &INVERTER, &inverters, plant::inverter);
-    let loads = read_all(text, log, &LOAD, &loads, equipment::load);
-    let surroundings = head.as_ref().and_then(|head| Some(head.as_ref()?.3));
-    for found in &circuits {
-        surroundings::check(surroundings, *found, log);
+    let (name, rules, earthing, ambient, place) = head?;
+    if has_weather && weather.is_none() {
+        return None;
     }
-    let mut reader = Circuits::new(text, &circuits);
-    let circuits: Vec<_> = circuits.iter().map(|found| reader.circuit(log, *found)).collect();
-
-    let (name, rules, earthing, ambient, place) = head??;
-    let weather = match weather {
-        Some(read) => Some(read?),
-        None => None,
-    };
-    let document = Document {
+    Some(Document {
         name,
         rules: rules_with(rules, overrides, overrides_at, log)?,
         earthing,
@@ -148,10 +148,26 @@ fn document(text: &str, tree: &DeTable<'_>, log: &mut Log) -> Option<Document> {
         inverters: inverters?,
         loads: loads?,
         circuits: circuits.into_iter().collect::<Option<_>>()?,
-        stock: stock.unwrap_or_default(),
-    };
-    references::check(&document, log);
-    Some(document)
+        stock,
+    })
+}
+
+/// Names, ends of circuits, and what they feed.
+fn check_ends(found: &Sections<'_>, log: &mut Log) {
+    let nodes = [
+        (Kind::Bank, &found.banks),
+        (Kind::Array, &found.arrays),
+        (Kind::Controller, &found.controllers),
+        (Kind::Generator, &found.generators),
+        (Kind::Converter, &found.converters),
+        (Kind::Board, &found.boards),
+        (Kind::Inverter, &found.inverters),
+        (Kind::Load, &found.loads),
+    ];
+    let nodes =
+        nodes.into_iter().flat_map(|(kind, list)| list.iter().filter_map(move |at| Node::of(kind, *at)));
+    let wires = found.circuits.iter().map(|circuit| Wire::of(*circuit)).collect();
+    Plan::new(nodes.collect(), wires).check(log);
 }
 
 /// Reads every section of a kind, so that the problems of all are found.
@@ -160,7 +176,7 @@ fn read_all<'d, T>(
     log: &mut Log,
     section: &'static Section,
     found: &[Found<'d>],
-    read: fn(&mut Entry<'d, '_>) -> Option<T>,
+    read: impl Fn(&mut Entry<'d, '_>) -> Option<T>,
 ) -> Option<Vec<T>> {
     let entries: Vec<Option<T>> =
         found.iter().map(|found| read(&mut Entry::open(text, log, section, *found, None))).collect();
@@ -172,8 +188,7 @@ type Head = (String, Rules, Earthing, (ThermodynamicTemperature, ThermodynamicTe
 fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
     let name = entry.name();
     let earthing = entry.word(&EARTHING, EARTHING_WORDS);
-    let ambient: Option<(ThermodynamicTemperature, ThermodynamicTemperature)> =
-        entry.two_quantities(&SITE_AMBIENT);
+    let ambient: Option<(ThermodynamicTemperature, ThermodynamicTemperature)> = rising(entry, &SITE_AMBIENT);
     let rules = entry.text(&RULES).and_then(|word| {
         let rules = Rules::named(word);
         if let Err(error) = &rules {
@@ -181,16 +196,7 @@ fn head_of(entry: &mut Entry<'_, '_>) -> Option<Head> {
         }
         rules.ok()
     });
-    if let Some((least, greatest)) = ambient
-        && least > greatest
-    {
-        entry.problem(
-            &SITE_AMBIENT,
-            "the least temperature is above the greatest; write the least first".to_owned(),
-        );
-        return None;
-    }
-    let place = times::place(entry);
+    let place = times::place(entry, earthing);
     Some((name?, rules?, earthing?, ambient?, place))
 }
 
@@ -220,9 +226,13 @@ impl<'d> Top<'d> {
                 continue;
             }
             let at = key.span().start;
-            let sentence = if let Some(word) = nearest(name, TOP.iter().map(|&(known, _)| known)) {
-                let meant = TOP.iter().find(|&&(known, _)| known == word).map_or("", |&(_, written)| written);
-                format!("no section '{}'; did you mean {meant}?", Cut(name))
+            let meant = MEANT_SECTIONS.iter().find(|&&(word, _)| word == name).map(|&(_, written)| written);
+            let near = || {
+                let word = nearest(name, TOP.iter().map(|&(known, _)| known))?;
+                TOP.iter().find(|&&(known, _)| known == word).map(|&(_, written)| written)
+            };
+            let sentence = if let Some(written) = meant.or_else(near) {
+                format!("no section '{}'; did you mean {written}?", Cut(name))
             } else {
                 let all: Vec<&str> = TOP.iter().map(|&(_, written)| written).collect();
                 format!("no section '{}'; at the top stand {}", Cut(name), all.join(", "))

@@ -11,12 +11,10 @@ use uom::si::thermodynamic_temperature::degree_celsius;
 use uom::si::time::hour;
 
 use super::line::{Cause, CauseKind, Implied, NextMeasurement, Verdict};
-use super::rest::{
-    self, DENSITY_PER_K, DENSITY_SPREAD, END_OF_LIFE, TABLE_degC, USUAL_RATE_H, charge_at, value_at,
-};
+use super::rest::{DENSITY_SPREAD, USUAL_RATE_H, charge_at, density_gain, part_at, value_at};
 use super::span::Span;
 use super::{Ask, Grade, Outcome, bank_unknown, meter};
-use crate::battery::Chemistry;
+use crate::battery::{Chemistry, data, rest_table};
 use crate::quantity::{ElectricCharge, ElectricCurrent, ElectricalResistance, Figures, Ratio};
 use crate::site::bank::{cells, ends};
 use crate::site::system::{BankEntry, FeedKind};
@@ -44,7 +42,8 @@ fn least_charge(bank: &BankEntry) -> f64 {
 /// State of charge by a rest voltage; what is missing where there is none.
 fn charge_by_volts(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Result<Span, String> {
     let Some(chemistry) = bank.chemistry() else { return Err("it is no bank of cells".to_string()) };
-    let needed = rest::rest_h(chemistry);
+    let table = rest_table(chemistry);
+    let needed = table.rest_h.value;
     if !ask.under.on.is_empty() {
         return Err("a rest is stated beside loads that ran".to_string());
     }
@@ -60,13 +59,10 @@ fn charge_by_volts(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Result<Span, 
         }
         None => return Err("how long it rested; state rest".to_string()),
     }
-    let Some(table) = rest::table(chemistry) else {
-        return Err(format!("no table of rest voltages is held for {chemistry}"));
-    };
     let (fewest, most) = cells(bank, chemistry);
     Ok(Span::new(
-        charge_at(table.volts, read.least / most - table.spread_V),
-        charge_at(table.volts, read.greatest / fewest + table.spread_V),
+        charge_at(table.voltage_V.value, read.least / most - table.spread_V.value),
+        charge_at(table.voltage_V.value, read.greatest / fewest + table.spread_V.value),
     ))
 }
 
@@ -111,20 +107,19 @@ fn outside(ask: &Ask<'_>, bank: &BankEntry, outcome: &mut Outcome) {
 }
 
 fn at_rest(ask: &Ask<'_>, bank: &BankEntry, read: Span, charge: Span) -> Outcome {
-    let Some((chemistry, table)) = bank.chemistry().and_then(|c| Some((c, rest::table(c)?))) else {
-        return bank_unknown("no table of rest voltages is held");
-    };
+    let Some(chemistry) = bank.chemistry() else { return bank_unknown("it is no bank of cells") };
+    let table = rest_table(chemistry);
     let (fewest, most) = cells(bank, chemistry);
     let least = least_charge(bank);
     let predicted = Span::new(
-        fewest * (value_at(table.volts, least) - table.spread_V),
-        most * (value_at(table.volts, 1.0) + table.spread_V),
+        fewest * (value_at(table.voltage_V.value, least) - table.spread_V.value),
+        most * (value_at(table.voltage_V.value, 1.0) + table.spread_V.value),
     );
     let basis = format!(
-        "at rest, from {:.0} % of charge to full by the {}, {} mV a cell between sources",
+        "at rest, from {:.0} % of charge to full ({}), {} mV a cell between sources",
         least * 100.0,
-        table.source,
-        Figures(table.spread_V * 1e3)
+        table.voltage_V.citation,
+        Figures(table.spread_V.value * 1e3)
     );
     let mut outcome = Outcome::compared(read, predicted, basis);
     outcome.implied.push(implied_charge(charge));
@@ -184,9 +179,8 @@ fn under_load(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Option<Outcome> {
             if !ask.under.amps.contains_key(&0) {
                 outcome.causes.extend(causes(bank, &[CauseKind::OtherLoadRan]));
             }
-            let telling = meter::telling_current(ask.reading);
-            outcome.next =
-                Some(each(bank, "volts, and the drop over each link between them,", Some(telling)));
+            let telling = meter::telling_current(ask.reading, 0.0);
+            outcome.next = Some(each(bank, "volts, and the drop over each link between them,", telling));
         }
         Verdict::Above => {
             outcome.grade = Grade::BankDiffers;
@@ -198,26 +192,27 @@ fn under_load(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Option<Outcome> {
     Some(outcome)
 }
 
+/// Temperature of the cells, °C: as read, else the bank's stated range, else the site's ambient.
+fn temperature(ask: &Ask<'_>, bank: &BankEntry) -> Span {
+    if let Some(read) = ask.reading.temperature {
+        return meter::temperature(read.get::<degree_celsius>()).span;
+    }
+    let stated = bank.part.as_ref().and_then(|p| p.temperature);
+    let (least, greatest) = stated.unwrap_or(ask.network.site.ambient);
+    Span::new(least.get::<degree_celsius>(), greatest.get::<degree_celsius>())
+}
+
 /// Relative density of the electrolyte.
 pub(super) fn density(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome {
     let rows = match bank.chemistry() {
-        Some(Chemistry::Flooded) => rest::table(Chemistry::Flooded).and_then(|t| t.density),
+        Some(Chemistry::Flooded) => rest_table(Chemistry::Flooded).density.map(|d| d.value),
         _ => None,
     };
     let Some(rows) = rows else {
         return bank_unknown("density tells the charge of vented lead-acid cells only");
     };
     // As it would be at the temperature of the table.
-    let degC = match (ask.reading.temperature, bank.part.as_ref().and_then(|p| p.temperature)) {
-        (Some(t), _) => meter::temperature(t.get::<degree_celsius>()).span,
-        (None, Some((a, b))) => Span::new(a.get::<degree_celsius>(), b.get::<degree_celsius>()),
-        (None, None) => {
-            let (a, b) = ask.network.site.ambient;
-            Span::new(a.get::<degree_celsius>(), b.get::<degree_celsius>())
-        }
-    };
-    let correction =
-        Span::new(DENSITY_PER_K * (degC.least - TABLE_degC), DENSITY_PER_K * (degC.greatest - TABLE_degC));
+    let correction = density_gain(temperature(ask, bank));
     let at_table = read.plus(correction);
     let by_density = Span::new(
         charge_at(rows, at_table.least - DENSITY_SPREAD),
@@ -282,7 +277,9 @@ pub(super) fn delivered(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome 
         return bank_unknown("its stated capacity");
     }
     // Q = C·(C/(I·H))^(k − 1), at the usual least and greatest exponent and at both ends of the current.
-    let (low, high) = rest::peukert(chemistry);
+    let held = data(chemistry);
+    let (low, high) = held.peukert.value;
+    let worn = held.end_of_life.value;
     let share = |amps: f64, exponent: f64| libm::pow(stated / (amps * hours), exponent - 1.0);
     let corners = [
         share(current.least, low),
@@ -294,16 +291,25 @@ pub(super) fn delivered(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome 
         corners.iter().copied().fold(f64::INFINITY, f64::min),
         corners.iter().copied().fold(0.0, f64::max),
     );
-    let predicted = Span::new(stated * factor.least * END_OF_LIFE, stated * factor.greatest);
+    let degC = temperature(ask, bank);
+    let Some(warmth) = part_at(chemistry, degC) else {
+        return bank_unknown(
+            "at the least temperature that its cells may have had no capacity is held; state temperature",
+        );
+    };
+    let factor = factor.times(warmth);
+    let predicted = Span::new(stated * factor.least * worn, stated * factor.greatest);
     let basis = format!(
-        "{} Ah in {} h{}, Peukert exponent {low} to {high} (common handbook values, recalled), {} to {} A; {} % at the \
-         end of life",
+        "{} Ah in {} h{}, Peukert exponent {low} to {high} ({}), {} to {} A, {} to {} °C; {} % at the end of life",
         Figures(stated),
         Figures(hours),
         if rate.is_some() { "" } else { " (the rate taken: common practice, no source)" },
+        held.peukert.citation,
         Figures(current.least),
         Figures(current.greatest),
-        Figures(END_OF_LIFE * 100.0)
+        Figures(degC.least),
+        Figures(degC.greatest),
+        Figures(worn * 100.0)
     );
     let mut outcome = Outcome::compared(read, predicted, basis);
     let own = read.over(factor);
@@ -315,18 +321,8 @@ pub(super) fn delivered(ask: &Ask<'_>, bank: &BankEntry, read: Span) -> Outcome 
     });
     match outcome.verdict {
         Verdict::Below => {
-            // MERGE: with the temperature factors of the battery room the reading is corrected instead.
-            let coldest = ask
-                .reading
-                .temperature
-                .or_else(|| part.and_then(|p| p.temperature).map(|(least, _)| least))
-                .unwrap_or(ask.network.site.ambient.0);
-            let is_warm = coldest.get::<degree_celsius>() >= 20.0;
-            outcome.grade = if is_warm { Grade::BankCapacity } else { Grade::BankDiffers };
+            outcome.grade = Grade::BankCapacity;
             outcome.causes = causes(bank, &[CauseKind::LostCapacity, CauseKind::BadCell, CauseKind::NotFull]);
-            if !is_warm {
-                outcome.causes.extend(causes(bank, &[CauseKind::ColdCells]));
-            }
             outcome.next = Some(each(
                 bank,
                 "volts towards the end of the next discharge, and the temperature of the cells,",

@@ -1,26 +1,20 @@
 //! How far the meter may be wrong.
 //!
-//! Accuracy and last digit as the reading states them, else those of a hand-held meter: common practice, no source.
+//! Accuracy and last digit as the reading states them, else those of the usual meter of the commissioning sheet: a clamp for
+//! every current, since nobody says that it went through the meter.
 
 use alloc::format;
 use alloc::string::String;
 
 use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
-use uom::si::ratio::{percent, ratio};
+use uom::si::ratio::ratio;
 
 use super::span::Span;
-use crate::quantity::{ElectricCurrent, Figures};
+use crate::quantity::{ElectricCurrent, ElectricPotential, Figures};
 use crate::site::parts::Reading;
+use crate::site::sheet::Meter as Usual;
 
-/// Part of the reading, by which a hand-held voltmeter may be wrong.
-const VOLTS_RATIO: f64 = 0.005;
-/// Its last digit at a battery's voltage, and at a drop, V.
-const VOLTS_DIGIT_V: f64 = 0.01;
-const DROP_DIGIT_V: f64 = 0.001;
-/// The same of a clamp meter, A.
-const AMPS_RATIO: f64 = 0.02;
-const AMPS_DIGIT_A: f64 = 0.1;
 /// Of a probe thermometer, K.
 const TEMPERATURE_K: f64 = 2.0;
 /// Of a hydrometer.
@@ -37,51 +31,66 @@ pub(super) struct Meter {
 
 const TAKEN: &str = "taken: common practice, no source";
 
-fn by_parts(
+/// Part of the reading and last digits of a meter.
+#[derive(Clone, Copy)]
+struct Error {
+    part: f64,
+    digits: f64,
+}
+
+fn with_error(
     reading: &Reading,
     value: f64,
-    (taken_ratio, taken_digit): (f64, f64),
+    usual: Error,
     digit: Option<f64>,
-    unit: &str,
+    (unit, scale): (&str, f64),
 ) -> Meter {
-    let part = reading.accuracy.map(|a| a.get::<ratio>());
-    let error = value.abs() * part.unwrap_or(taken_ratio) + digit.unwrap_or(taken_digit);
-    let shown = crate::quantity::Ratio::new::<ratio>(part.unwrap_or(taken_ratio)).get::<percent>();
-    let from = match (part, digit) {
+    let stated = reading.accuracy.map(|a| a.get::<ratio>());
+    let (part, digits) = (stated.unwrap_or(usual.part), digit.unwrap_or(usual.digits));
+    let error = value.abs() * part + digits;
+    let from = match (stated, digit) {
         (Some(_), Some(_)) => "stated",
-        (Some(_), None) => "its last digit taken: common practice, no source",
+        (Some(_), None) => "its last digits taken: common practice, no source",
         (None, Some(_)) => "its accuracy taken: common practice, no source",
         (None, None) => TAKEN,
     };
-    // A drop is told in millivolts.
-    let scale = if unit == "mV" { 1e3 } else { 1.0 };
     let words = format!(
         "± {} {unit} ({} % and {} {unit}, {from})",
         Figures(error * scale),
-        Figures(shown),
-        Figures(digit.unwrap_or(taken_digit) * scale)
+        Figures(part * 100.0),
+        Figures(digits * scale)
     );
     Meter { span: Span::around(value, error), words }
+}
+
+/// Error of the usual meter at a voltage.
+fn usual_volts(value: f64) -> Error {
+    let usual = Usual::usual();
+    let part = usual.volts.accuracy.get::<ratio>();
+    let error = usual.voltage_error(ElectricPotential::new::<volt>(value)).get::<volt>();
+    Error { part, digits: error - part * value.abs() }
 }
 
 /// Volts at terminals.
 pub(super) fn volts(reading: &Reading) -> Option<Meter> {
     let value = reading.volts?.get::<volt>();
     let digit = reading.resolution.map(|r| r.get::<volt>());
-    Some(by_parts(reading, value, (VOLTS_RATIO, VOLTS_DIGIT_V), digit, "V"))
+    Some(with_error(reading, value, usual_volts(value), digit, ("V", 1.0)))
 }
 
 /// Volts along a circuit.
 pub(super) fn drop(reading: &Reading) -> Option<Meter> {
     let value = reading.drop?.get::<volt>();
     let digit = reading.resolution.map(|r| r.get::<volt>());
-    Some(by_parts(reading, value, (VOLTS_RATIO, DROP_DIGIT_V), digit, "mV"))
+    Some(with_error(reading, value, usual_volts(value), digit, ("mV", 1e3)))
 }
 
 /// Amperes; a stated last digit is that of the volt range.
 pub(super) fn amps(reading: &Reading) -> Option<Meter> {
     let value = reading.amps?.get::<ampere>();
-    Some(by_parts(reading, value, (AMPS_RATIO, AMPS_DIGIT_A), None, "A"))
+    let clamp = Usual::usual().clamp;
+    let usual = Error { part: clamp.accuracy.get::<ratio>(), digits: 2.0 * clamp.resolution.get::<ampere>() };
+    Some(with_error(reading, value, usual, None, ("A", 1.0)))
 }
 
 pub(super) fn temperature(degC: f64) -> Meter {
@@ -101,8 +110,14 @@ pub(super) fn delivered(reading: &Reading, value_Ah: f64) -> Meter {
     Meter { span: Span::around(value_Ah, value_Ah * part), words }
 }
 
-/// Current at which the last digit of the meter of a reading is 1 mΩ.
-pub(super) fn telling_current(reading: &Reading) -> ElectricCurrent {
-    let digit = reading.resolution.map_or(DROP_DIGIT_V, |r| r.get::<volt>());
-    ElectricCurrent::new::<ampere>(digit / 1e-3)
+/// Current from which the meter of a reading shows a milliohm beside a resistance: there it makes more volts than the drop
+/// may be wrong by. `None` where the error grows faster, so that the path must be measured in parts.
+///
+/// I = d/(1 mΩ − a·(R + 1 mΩ)), with last digits d and accuracy a.
+pub(super) fn telling_current(reading: &Reading, ohms: f64) -> Option<ElectricCurrent> {
+    let usual = usual_volts(0.0);
+    let digits = reading.resolution.map_or(usual.digits, |r| r.get::<volt>());
+    let part = reading.accuracy.map_or(usual.part, |a| a.get::<ratio>());
+    let slope = 1e-3 - part * (ohms + 1e-3);
+    (slope > 0.0).then(|| ElectricCurrent::new::<ampere>(digits / slope))
 }

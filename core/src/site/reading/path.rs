@@ -367,10 +367,11 @@ impl Question<'_> {
         let tree = self.network.tree(self.place)?;
         let from = tree.nodes.get(tree.nodes.get(*path.first()?)?.parent)?.item;
         let terminal = |name: &str| format!("the terminals of \"{name}\"");
+        let ohms = path.iter().filter_map(|&n| self.circuit_of(n)).map(|c| self.ohms(c).greatest).sum();
         Some(NextMeasurement {
             what,
             between: (terminal(name_of(self.network.site, from)), terminal(self.name(*path.last()?))),
-            current: Some(telling_current(self.reading)),
+            current: telling_current(self.reading, ohms),
         })
     }
 }

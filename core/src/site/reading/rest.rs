@@ -1,92 +1,48 @@
-//! Cells at rest: what voltage and density tell of the charge.
-//!
-//! MERGE: `battery::rest_table`, `battery::rest_time`, `battery::data(…).peukert` and the temperature factors take the
-//! place of everything here but the lookups.
+//! Cells at rest and over a discharge: lookups in what the battery room holds.
 
-use crate::battery::Chemistry;
+use uom::si::ratio::ratio;
+use uom::si::thermodynamic_temperature::degree_celsius;
 
-/// Rest voltage of a cell and relative density against charge.
-pub(super) struct RestTable {
-    /// (state of charge, V a cell), emptiest first.
-    pub volts: &'static [(f64, f64)],
-    /// By how much sources or makers differ, V a cell.
-    pub spread_V: f64,
-    /// (state of charge, relative density at about 25 °C), emptiest first.
-    pub density: Option<&'static [(f64, f64)]>,
-    /// Source.
-    pub source: &'static str,
-}
+use super::span::Span;
+use crate::battery::{Chemistry, cold_fraction, relative_density_at_reference, temperature_factor};
+use crate::quantity::{Ratio, ThermodynamicTemperature};
 
-/// Battery council table, widely reprinted: page seen; `lead-acid-ocv-soc-flooded` of the reference.
-const FLOODED: RestTable = RestTable {
-    volts: &[(0.0, 1.982), (0.25, 2.01), (0.5, 2.04), (0.75, 2.075), (1.0, 2.108)],
-    // Another source, page seen, is higher by 0.06 to 0.09 V for six cells at and below half charge.
-    spread_V: 0.015,
-    density: Some(&[(0.0, 1.12), (0.25, 1.155), (0.5, 1.19), (0.75, 1.225), (1.0, 1.265)]),
-    source: "battery council table, widely reprinted",
-};
-/// Typical published curve: recalled; `lfp-ocv-soc-typical` of the reference.
-const LFP: RestTable = RestTable {
-    volts: &[
-        (0.0, 2.5),
-        (0.05, 3.05),
-        (0.1, 3.18),
-        (0.2, 3.23),
-        (0.3, 3.26),
-        (0.4, 3.28),
-        (0.5, 3.29),
-        (0.6, 3.3),
-        (0.7, 3.31),
-        (0.8, 3.33),
-        (0.9, 3.34),
-        (1.0, 3.4),
-    ],
-    spread_V: 0.02,
-    density: None,
-    source: "typical published curve (recalled)",
-};
 /// By how much the density of acid differs between sources at one state of charge: the middles of the bands of
-/// `lead-acid-ocv-soc-magazine` lie up to 0.025 above the table.
+/// `lead-acid-ocv-soc-magazine` in `tests/reference/battery.toml` lie up to 0.025 above the table.
 pub(super) const DENSITY_SPREAD: f64 = 0.02;
-/// Change of relative density with temperature, 1/K: 0.003 for 10 °F. Battery maker's technical FAQ, page seen.
-pub(super) const DENSITY_PER_K: f64 = 0.003 / (10.0 / 1.8);
-/// Temperature of the tables, °C.
-#[allow(non_upper_case_globals)]
-pub(super) const TABLE_degC: f64 = 25.0;
-/// Part of the stated capacity at which a bank counts as worn out: common practice, no source.
-pub(super) const END_OF_LIFE: f64 = 0.8;
 /// Hours to which a capacity is rated where nobody says so: common practice, no source.
 pub(super) const USUAL_RATE_H: f64 = 20.0;
+/// Temperature to which densities are held, °C.
+const TABLE: f64 = 25.0;
 
-/// What is held about cells at rest.
-pub(super) const fn table(chemistry: Chemistry) -> Option<&'static RestTable> {
-    match chemistry {
-        Chemistry::Flooded => Some(&FLOODED),
-        Chemistry::Lfp => Some(&LFP),
-        Chemistry::Agm | Chemistry::Gel | Chemistry::Nmc | Chemistry::NickelCadmium => None,
-    }
+fn celsius(value: f64) -> ThermodynamicTemperature {
+    ThermodynamicTemperature::new::<degree_celsius>(value)
 }
 
-/// Time without charge and load before a voltage is one at rest, h. Common practice, no source.
-pub(super) const fn rest_h(chemistry: Chemistry) -> f64 {
-    match chemistry {
-        Chemistry::Flooded | Chemistry::Agm | Chemistry::Gel => 6.0,
-        Chemistry::Lfp | Chemistry::Nmc => 2.0,
-        Chemistry::NickelCadmium => 12.0,
-    }
+/// What a density at a temperature gains when it is brought to that of the table.
+pub(super) fn density_gain(degC: Span) -> Span {
+    // Linear in the density: any reading shows it.
+    let gain = |at: f64| {
+        relative_density_at_reference(
+            Ratio::new::<ratio>(1.2),
+            celsius(at.clamp(-40.0, 60.0)),
+            celsius(TABLE),
+        )
+        .map_or(0.0, |d| d.get::<ratio>() - 1.2)
+    };
+    Span::new(gain(degC.least), gain(degC.greatest))
 }
 
-/// Usual least and greatest Peukert exponent. Common handbook values, recalled: `peukert-exponent-ranges`; lithium and
-/// nickel likewise.
-pub(super) const fn peukert(chemistry: Chemistry) -> (f64, f64) {
-    match chemistry {
-        Chemistry::Flooded => (1.2, 1.6),
-        Chemistry::Agm => (1.05, 1.15),
-        Chemistry::Gel => (1.1, 1.25),
-        Chemistry::Lfp => (1.01, 1.05),
-        Chemistry::Nmc => (1.01, 1.08),
-        Chemistry::NickelCadmium => (1.05, 1.2),
-    }
+/// Part of the capacity at 25 °C that a bank gives between two temperatures; `None` where no table holds it.
+pub(super) fn part_at(chemistry: Chemistry, degC: Span) -> Option<Span> {
+    let part = |at: f64| -> Option<f64> {
+        if chemistry.is_lead_acid() {
+            Some(1.0 / temperature_factor(celsius(at)).ok()?.get::<ratio>())
+        } else {
+            Some(cold_fraction(chemistry, celsius(at)).ok()?.value.get::<ratio>())
+        }
+    };
+    Some(Span::new(part(degC.least)?, part(degC.greatest)?))
 }
 
 /// State of charge at a value of the second column, by the straight line between rows; nought and one beyond its ends.
@@ -117,23 +73,52 @@ fn along(rows: impl Iterator<Item = (f64, f64)>, x: f64) -> f64 {
 
 #[cfg(test)]
 mod tests {
+    use uom::si::electric_potential::volt;
+
     use super::*;
+    use crate::battery::{rest_table, state_of_charge};
+    use crate::quantity::ElectricPotential;
 
     #[test]
     fn rows_are_met_and_the_line_runs_between_them() {
-        let rows = FLOODED.volts;
+        let rows = rest_table(Chemistry::Flooded).voltage_V.value;
         assert_eq!(charge_at(rows, 2.04), 0.5);
         // Half way from 2.040 to 2.075 V.
         assert!((charge_at(rows, 2.0575) - 0.625).abs() < 1e-12);
         assert_eq!((charge_at(rows, 1.0), charge_at(rows, 3.0)), (0.0, 1.0));
         assert!((value_at(rows, 0.625) - 2.0575).abs() < 1e-12);
-        for table in [&FLOODED, &LFP] {
-            for columns in [Some(table.volts), table.density].into_iter().flatten() {
-                assert!(columns.is_sorted_by(|a, b| a.0 < b.0 && a.1 < b.1));
-                for &(charge, value) in columns {
-                    assert_eq!((charge_at(columns, value), value_at(columns, charge)), (charge, value));
-                }
+    }
+
+    /// The battery room's own answer, by another way.
+    #[test]
+    fn charge_is_what_the_battery_room_says() {
+        for chemistry in Chemistry::ALL {
+            let table = rest_table(chemistry);
+            for part in 0..=20 {
+                let volts = value_at(table.voltage_V.value, f64::from(part) / 20.0);
+                let error = ElectricPotential::new::<volt>(0.0);
+                let theirs =
+                    state_of_charge(chemistry, 1, ElectricPotential::new::<volt>(volts), error).unwrap();
+                let spread = table.spread_V.value;
+                let ours = charge_at(table.voltage_V.value, volts - spread)
+                    ..=charge_at(table.voltage_V.value, volts + spread);
+                assert!((theirs.least.get() - ours.start()).abs() < 1e-9, "{chemistry} {part}");
+                assert!((theirs.greatest.get() - ours.end()).abs() < 1e-9, "{chemistry} {part}");
             }
         }
+    }
+
+    #[test]
+    fn warmth_and_density_by_hand() {
+        // 0.003 for 10 °F: 1.250 read at 90 °F is 1.253 at 80 °F.
+        let gain = density_gain(Span::exactly(25.0 + 10.0 / 1.8));
+        assert!((gain.least - 0.003).abs() < 1e-12 && gain.least == gain.greatest);
+        // IEEE 485: 1.19 at 10 °C.
+        let part = part_at(Chemistry::Flooded, Span::new(10.0, 25.0)).unwrap();
+        assert!((part.least - 1.0 / 1.19).abs() < 1e-12 && (part.greatest - 1.0).abs() < 1e-12);
+        assert!(part_at(Chemistry::Flooded, Span::new(-20.0, 25.0)).is_none());
+        assert!(
+            part_at(Chemistry::Lfp, Span::new(-10.0, 25.0)).is_some_and(|p| (p.least - 0.7).abs() < 1e-12)
+        );
     }
 }

@@ -78,7 +78,7 @@ pub(super) fn joint(ask: &Ask<'_>, read: Span) -> Outcome {
             outcome.next = Some(NextMeasurement {
                 what: "drop from the conductor just behind the lug to the stud, of each joint in turn,",
                 between: (terminal.clone(), terminal),
-                current: Some(telling_current(ask.reading)),
+                current: telling_current(ask.reading, 0.0),
             });
         }
         Verdict::Below => {

@@ -72,7 +72,13 @@ fn report(readings: &str) -> Report {
 fn reading(name: &str, at: &str, on: &str, keys: &str) -> String {
     let keys = keys.replace("; ", "\n");
     let on = if on.is_empty() { String::new() } else { format!("on = [{on}]\n") };
-    format!("[[reading]]\nname = '{name}'\nat = '{at}'\n{on}{keys}\n")
+    let digit = match keys.contains("resolution") {
+        true => "",
+        // One of the millivolt range, one of the volt range.
+        false if keys.contains("drop") => "resolution = '1 mV'\n",
+        false => "resolution = '10 mV'\n",
+    };
+    format!("[[reading]]\nname = '{name}'\nat = '{at}'\n{on}{digit}{keys}\n")
 }
 
 fn line<'a>(report: &'a Report, name: &str, what: &str) -> &'a ReadingLine {
@@ -105,10 +111,10 @@ fn a_drop_is_predicted_from_cold_and_bare_to_warm_with_joints() {
     let circuit = report.circuits.iter().find(|c| c.name == "pump run").unwrap();
     let line = line(&report, "a", "drop");
     let (least, greatest) = line.predicted.unwrap();
-    // The clamp's last digit of 0.1 A is taken, its accuracy stated as none.
-    assert!((volts(least) - 9.9 * 10.0 / 58.0 / 4.0).abs() < 1e-9, "{least}");
+    // The clamp's two last digits of 0.1 A are taken, its accuracy stated as none.
+    assert!((volts(least) - 9.8 * 10.0 / 58.0 / 4.0).abs() < 1e-9, "{least}");
     let warm = circuit.judgement.resistance.value;
-    assert!((volts(greatest) - 10.1 * warm).abs() < 1e-9, "{greatest}");
+    assert!((volts(greatest) - 10.2 * warm).abs() < 1e-9, "{greatest}");
     assert_eq!(line.verdict, Verdict::Within);
     assert!(line.causes.is_empty() && line.implied.is_empty() && line.next.is_none());
     assert_eq!(severity(&report, "reading-implies-heat"), None);
@@ -122,9 +128,9 @@ fn a_greater_drop_implies_resistance_and_heat_by_hand() {
     assert_eq!(line.verdict, Verdict::Above);
     let Some(Implied::Resistance { circuit, extra, current, heat }) = line.implied.first() else { panic!() };
     assert_eq!((circuit.as_str(), current.get::<ampere>()), ("pump run", 10.0));
-    // (1 V − 1 mV)/10.1 A − the warm loop; (1 V + 1 mV)/9.9 A − the cold one.
-    let least = 999.0 / 10.1 - warm.get::<milliohm>();
-    let greatest = 1001.0 / 9.9 - 10_000.0 / 58.0 / 4.0;
+    // (1 V − 1 mV)/10.2 A − the warm loop; (1 V + 1 mV)/9.8 A − the cold one.
+    let least = 999.0 / 10.2 - warm.get::<milliohm>();
+    let greatest = 1001.0 / 9.8 - 10_000.0 / 58.0 / 4.0;
     assert!((extra.0.get::<milliohm>() - least).abs() < 1e-9, "{extra:?}");
     assert!((extra.1.get::<milliohm>() - greatest).abs() < 1e-9, "{extra:?}");
     assert!((heat.0.get::<watt>() - least * 0.1).abs() < 1e-9);
@@ -154,11 +160,11 @@ fn severity_follows_the_heat_at_the_current_of_the_worst_hour() {
         let keys = format!("drop = '{drop}'; amps = '10 A'");
         severity(&report(&reading("a", "pump run", PUMP, &keys)), "reading-implies-heat")
     };
-    // (1.910 + 0.001)/9.9 − 0.0431 = 149.9 mΩ; 1.914 V: 150.3 mΩ.
-    assert_eq!(at("1.910 V"), Some(Severity::Advice));
-    assert_eq!(at("1.914 V"), Some(Severity::Nonconforming));
+    // (1.890 + 0.001)/9.8 − 0.0431 = 149.9 mΩ; 1.893 V: 150.2 mΩ.
+    assert_eq!(at("1.890 V"), Some(Severity::Advice));
+    assert_eq!(at("1.893 V"), Some(Severity::Nonconforming));
     let warm = report("").circuits.iter().find(|c| c.name == "pump run").unwrap().judgement.resistance.value;
-    let edge = 10.1 * (0.3 + warm) + 0.001;
+    let edge = 10.2 * (0.3 + warm) + 0.001;
     assert_eq!(at(&format!("{:.4} V", edge - 0.001)), Some(Severity::Nonconforming));
     assert_eq!(at(&format!("{:.4} V", edge + 0.001)), Some(Severity::Danger));
 }
@@ -316,8 +322,9 @@ fn a_discharge_tells_the_capacity() {
     let at = |delivered: &str| {
         report(&reading("a", "house", PUMP, &format!("delivered = '{delivered} Ah'; amps = '10 A'")))
     };
-    // 10 A is the 20-hour current: 200 Ah by any exponent but for the clamp's 0.1 A: 80 % of 200·(10/10.1)^0.6.
-    let edge = 160.0 * libm::pow(10.0 / 10.1, 0.6);
+    // 10 A is the 20-hour current: 200 Ah by any exponent but for the clamp's 0.2 A: 80 % of 200·(10/10.2)^0.6, at 20 °C
+    // over 1.056 (IEEE 485, Table 1, page seen).
+    let edge = 160.0 / 1.056 * libm::pow(10.0 / 10.2, 0.6);
     let fine = at(&format!("{:.3}", edge + 0.001));
     assert_eq!(severity(&fine, "bank-capacity-below-stated"), None);
     let poor = at("90");
@@ -325,8 +332,8 @@ fn a_discharge_tells_the_capacity() {
     let Some(Implied::Capacity { charge, of_stated }) = line(&poor, "a", "delivered").implied.first() else {
         panic!()
     };
-    assert!((charge.0.get::<ampere_hour>() - 90.0 * libm::pow(9.9 / 10.0, 0.6)).abs() < 1e-9);
-    assert!((of_stated.1.get::<ratio>() - 0.45 * libm::pow(10.1 / 10.0, 0.6)).abs() < 1e-9);
+    assert!((charge.0.get::<ampere_hour>() - 90.0 * 1.056 * libm::pow(9.8 / 10.0, 0.6)).abs() < 1e-9);
+    assert!((of_stated.1.get::<ratio>() - 0.45 * 1.056 * libm::pow(10.2 / 10.0, 0.6)).abs() < 1e-9);
     let nothing_known = report(&reading("a", "house", "", "delivered = '90 Ah'"));
     assert_eq!(severity(&nothing_known, "bank-reading-not-compared"), Some(Severity::NotChecked));
 }
@@ -344,7 +351,7 @@ fn heat_of_a_joint_follows_from_its_temperature() {
     let Some(Implied::Resistance { extra, .. }) = line(&capped, "a", "temperature").implied.get(1) else {
         panic!()
     };
-    assert!((extra.1.get::<milliohm>() - (451.0 / 9.9 - 10_000.0 / 58.0 / 4.0)).abs() < 1e-9, "{extra:?}");
+    assert!((extra.1.get::<milliohm>() - (451.0 / 9.8 - 10_000.0 / 58.0 / 4.0)).abs() < 1e-9, "{extra:?}");
     // PVC of 70 °C, and 2 K for the thermometer.
     let at = |t: &str| {
         severity(
@@ -361,7 +368,7 @@ fn currents_above_what_was_designed_for_are_graded() {
         severity(&report(&reading("a", "pump", PUMP, &format!("amps = '{amps} A'"))), "current-above-design")
     };
     assert_eq!(at("10.05"), None);
-    assert_eq!(at("10.2"), Some(Severity::Nonconforming));
+    assert_eq!(at("10.3"), Some(Severity::Nonconforming));
     assert_eq!(at("90"), Some(Severity::Danger));
 }
 

@@ -85,7 +85,10 @@ pub(super) fn labels(site: &Site, plan: &Plan) -> Vec<Label> {
         let of_array = |name: &String| arrays.contains(name.as_str());
         let third = if of_array(&circuit.from) || of_array(&circuit.to) {
             "LIVE IN DAYLIGHT".to_string()
-        } else if (planned.feeds.from && planned.feeds.to) || from_source(&circuit.from) {
+        } else if (planned.feeds.from && planned.feeds.to)
+            || from_source(&circuit.from)
+            || planned.flow.charged
+        {
             "LIVE FROM BOTH ENDS".to_string()
         } else {
             let guarded = planned.fitted.first().map_or_else(String::new, |f| {

@@ -202,7 +202,7 @@ fn wiring(site: &Site, plan: &Plan, add: &mut impl FnMut(Every, &str, &str)) {
     let bond = if site.earthing == Earthing::Floating {
         String::new()
     } else {
-        format!("; the one bond to {earth} tight")
+        format!("; the bond to {earth} tight, and the only one")
     };
     add(YEARLY, "all circuits", &format!("insulation test, loads off{bond}"));
     add(
@@ -211,7 +211,7 @@ fn wiring(site: &Site, plan: &Plan, add: &mut impl FnMut(Every, &str, &str)) {
         "millivolts of each joint under load beside those of the commissioning sheet; chafe, warmth, labels",
     );
     add(YEARLY, "breakers, switches, isolators", "opened and closed twice, without load");
-    if site.place.surge_protection == Some(true) || site.arrays.iter().any(|a| a.part.exposed) {
+    if site.place.surge_protection == Some(true) {
         add(HALF_YEARLY, "surge protection", "indicator, and after every thunderstorm");
     }
 }

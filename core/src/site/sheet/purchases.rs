@@ -18,7 +18,7 @@ use crate::cable::{Conductor, Stud};
 use crate::device::Supply;
 use crate::protection::Guard;
 use crate::quantity::ConductorSize;
-use crate::site::check::bank::drawn;
+use crate::site::check::bank::carried;
 use crate::site::finding::digits;
 use crate::site::model::{CircuitEntry, Return, StockDevice};
 use crate::site::parts::{ControllerKind, ControllerPart};
@@ -135,7 +135,7 @@ fn strings(site: &Site, plan: &Plan, basket: &mut Basket) {
         if !bank.part.as_ref().is_some_and(|p| p.designed) {
             continue;
         }
-        let share = drawn(site, plan, &bank.name).get::<ampere>() / f64::from(bank.strings);
+        let share = carried(site, plan, &bank.name).get::<ampere>() / f64::from(bank.strings);
         let what = format!(
             "device for one string, at least {} A, {} V DC, with two equal leads to a busbar",
             digits(STRING_MARGIN * share),

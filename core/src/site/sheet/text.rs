@@ -17,13 +17,22 @@ use super::maintenance::Every;
 use super::meter::{METER, Meter};
 use super::switching::Direction;
 use crate::quantity::{ElectricCurrent, ElectricPotential, Figures};
-use crate::site::finding::digits;
+use crate::site::finding::{Severity, digits};
 use crate::site::report::Report;
 use crate::site::text::{heading, printable, short};
 
 /// Prints what to buy and the sheets.
 pub(in crate::site) fn print(report: &Report, f: &mut fmt::Formatter<'_>) -> fmt::Result {
     bought(report, f)?;
+    let dangers = report.count(Severity::Danger);
+    if dangers > 0 && !report.commissioning.is_empty() {
+        heading(f, "Before anything is switched on")?;
+        writeln!(
+            f,
+            "  {dangers} dangers are open above. The sheets below take the document as it stands, its set points too:\n  mend the \
+             dangers first, then make the sheets anew."
+        )?;
+    }
     commissioning(report, f)?;
     switching(report, f)?;
     labels(report, f)?;
