@@ -66,8 +66,7 @@ pub const TEMPERATURE_FACTORS: [(f64, f64); 41] = [
 #[allow(non_upper_case_globals)]
 const SEEN_degC: (f64, f64) = (4.4, 48.9);
 
-const NO_COLD_FACTOR: &str =
-    "ask the maker for the capacity at that temperature and state its factor, or keep the bank warmer";
+const NO_COLD_FACTOR: &str = "ask the maker for the part of the capacity left there and state it (cold_capacity), or keep the bank warmer";
 
 /// Factor by which a lead-acid or nickel-cadmium bank must be larger at a temperature than at 25 °C.
 ///

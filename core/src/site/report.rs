@@ -176,7 +176,6 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
     let readings = super::reading::readings(site, &plan, &mut found);
     found.list.sort_by_key(|f| f.severity);
     Ok(Report {
-        plant,
         name: site.name.clone(),
         edition: site.rules.set().edition.to_string(),
         overrides: site.rules.overridden().iter().map(ToString::to_string).collect(),
@@ -196,9 +195,10 @@ pub fn inspect(document: &Document) -> Result<Report, Problems> {
             lines.extend(plant_assumptions(site));
             lines
         },
-        recalled: recalled(&circuits),
+        recalled: recalled(&circuits, &plant),
         not_covered: not_covered(site),
         circuits,
+        plant,
     })
 }
 
@@ -416,8 +416,15 @@ fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
             names(&|c| (c.diversity - 1.0).abs() > f64::EPSILON)
         ));
     }
+    let timed = site.loads.iter().any(|l| !l.use_of.at.is_empty() || l.use_of.months.is_some());
+    if timed {
+        lines.push(
+            "loads that state their times of day or months meet only where those do; all others may meet any of them"
+                .to_string(),
+        );
+    }
     lines.push(
-        "worst hour: every load at once, the bank at cut-off, each of several banks alone, constant-power loads solved \
+        "worst hour: every load at once that may meet, the bank at cut-off, each of several banks alone, constant-power loads solved \
          at the volts that reach them; resistive loads load conductors and devices with their current at the highest \
          voltage"
             .to_string(),
@@ -488,7 +495,7 @@ fn plant_assumptions(site: &Site) -> Vec<String> {
 }
 
 /// Sources used that nobody has seen.
-fn recalled(circuits: &[CircuitLine]) -> Vec<String> {
+fn recalled(circuits: &[CircuitLine], plant: &PlantLines) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
     for circuit in circuits {
         let factors = circuit.judgement.ampacity.iter().flat_map(|a| a.factors.iter().map(|f| f.citation));
@@ -501,6 +508,15 @@ fn recalled(circuits: &[CircuitLine]) -> Vec<String> {
             if !lines.contains(&line) {
                 lines.push(line);
             }
+        }
+    }
+    let banks = plant.banks.iter().flat_map(|b| &b.steps);
+    let arrays = plant.arrays.iter().flat_map(|a| &a.steps);
+    let sources = plant.generators.iter().flat_map(|g| &g.steps);
+    for citation in banks.chain(arrays).chain(sources).filter_map(|step| step.citation) {
+        let line = format!("{}, {}", citation.document, citation.place);
+        if citation.seen == Seen::Recalled && !lines.contains(&line) {
+            lines.push(line);
         }
     }
     lines
@@ -557,7 +573,21 @@ fn not_covered(site: &Site) -> Vec<String> {
             ));
         }
     }
+    let mut idle_keys: Vec<&str> = Vec::new();
+    if site.place.latitude.is_some() || site.place.longitude.is_some() {
+        idle_keys.push("latitude and longitude");
+    }
+    if site.arrays.iter().any(|a| a.part.tilt.is_some() || a.part.azimuth.is_some()) {
+        idle_keys.push("tilt and azimuth: the sun is stated in the plane of the array");
+    }
+    if site.loads.iter().any(|l| l.priority.is_some()) {
+        idle_keys.push("priority: nothing is shed");
+    }
+    if !idle_keys.is_empty() {
+        lines.push(format!("stated, and used for nothing yet: {}", idle_keys.join("; ")));
+    }
     if site.is_whole {
+        lines.push("derating of inverters, chargers and controllers in their own heat".to_string());
         lines.extend(
             [
                 "weather from hour to hour, the loss of load over years, ageing: mean days of the months only",

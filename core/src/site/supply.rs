@@ -71,9 +71,14 @@ pub(super) fn day_energy(
     })
 }
 
-/// Part of what a source gives that the bank stores.
-pub(super) fn stored(bank: &BankEntry) -> Ratio {
+/// Part of a charge, counted at nominal voltage, that the bank gives back.
+pub(super) fn stored_charge(bank: &BankEntry) -> Ratio {
     Ratio::new::<ratio>(bank.chemistry().map_or(1.0, |c| data(c).charge_efficiency.value))
+}
+
+/// Part of an energy that the bank gives back: its charge goes in at a higher voltage than it comes out.
+pub(super) fn stored_energy(bank: &BankEntry) -> Ratio {
+    Ratio::new::<ratio>(bank.chemistry().map_or(1.0, |c| data(c).energy_efficiency.value))
 }
 
 /// Energy of an array that its bank stores on a month's mean day.
@@ -82,7 +87,9 @@ pub(super) fn array_energy(site: &Site, array: &Array, bank: &BankEntry, month: 
     let module = module_of(&array.module).ok()?;
     let whole = day_energy(site, &module, controller, (array.series, array.strings), bank.nominal, month)?;
     let shaded = array.part.shade.map_or(0.0, |s| s.get::<ratio>());
-    Some(whole * (1.0 - ARRAY_LOSS) * (1.0 - shaded) * stored(bank))
+    let stored =
+        if controller.kind == Some(ControllerKind::Pwm) { stored_charge(bank) } else { stored_energy(bank) };
+    Some(whole * (1.0 - ARRAY_LOSS) * (1.0 - shaded) * stored)
 }
 
 /// Energy of all arrays of some banks in each month; `None` without weather or arrays.
@@ -112,16 +119,16 @@ pub(super) fn generators_of(site: &Site, banks: &[usize]) -> Energy {
         let ChargerKind::Generator(index) = charger.kind else { continue };
         let bank = charger.bank.filter(|b| banks.contains(b)).and_then(|b| site.banks.get(b));
         let (Some(part), Some(entry)) = (site.generators.get(index), bank) else { continue };
-        let given = part.daily.or_else(|| {
+        let by_hours = || {
             let hours = part.hours?.get::<hour>().min(24.0);
-            let hot = part
-                .hot_output
-                .map_or(if part.kind == GeneratorKind::Alternator { ALTERNATOR_HOT } else { 1.0 }, |h| {
-                    h.get::<ratio>()
-                });
+            let usual = if part.kind == GeneratorKind::Alternator { ALTERNATOR_HOT } else { 1.0 };
+            let hot = part.hot_output.map_or(usual, |h| h.get::<ratio>());
             Some(part.output? * hot * entry.nominal * Time::new::<hour>(hours))
-        });
-        sum += given.unwrap_or_default() * stored(entry);
+        };
+        sum += match part.daily {
+            Some(daily) => daily * stored_energy(entry),
+            None => by_hours().unwrap_or_default() * stored_charge(entry),
+        };
     }
     sum
 }

@@ -16,6 +16,7 @@ use crate::array::{
     ARRAY_TO_LOAD, ArrayNeed, EnergyNeed, Exposure, Layout, LoadClass, Module, NeedMonth, Preference,
     StringDevice, array_need, energy_need, layouts, string_voltages, sun_hours,
 };
+use crate::battery::Datum;
 use crate::citation::{Citation, Seen};
 use crate::error::Error;
 use crate::quantity::{
@@ -114,7 +115,8 @@ struct Wanted<'a> {
     sun: [Time; 12],
     class: LoadClass,
     losses: Ratio,
-    charge_efficiency: Ratio,
+    /// Part of a charge, and of an energy, that the bank gives back.
+    stored: [Datum<f64>; 2],
     shade: Exposure,
 }
 
@@ -135,7 +137,7 @@ pub(super) fn design(
     site: &mut Site,
     bank: usize,
     demand: &Demand,
-    charge_efficiency: Ratio,
+    stored: [Datum<f64>; 2],
     stated: Option<&ArrayPart>,
     reasons: &mut Reasons,
 ) -> Result<(), Problem> {
@@ -167,7 +169,7 @@ pub(super) fn design(
             // More than nine tenths lost are refused by the sizing.
             Ratio::new::<ratio>((1.0 - (1.0 - ARRAY_LOSS) * (1.0 - shaded)).min(0.9))
         },
-        charge_efficiency,
+        stored,
         shade: match stated.and_then(|a| a.shade) {
             Some(part) if part.value > 0.0 => Exposure::PartlyShaded,
             _ => Exposure::Open,
@@ -241,6 +243,8 @@ pub(super) fn design(
                         });
                     }
                 }
+                // Of plain controllers only the one taken is worth a word.
+                Err(_) if site.stock.controllers.is_empty() && theirs.is_empty() => {}
                 Err(why) => rejected.push(Rejected { what: what(), why }),
             }
             // Plain controllers come smallest first: the first that serves is the one to buy.
@@ -442,11 +446,12 @@ fn clamped(
     })
     .map_err(words)?;
     let hot = hot.hot_vmp.ok_or("its voltage in the heat is not known: no coefficient is stated")?;
+    let [charge, _] = wanted.stored;
     let need = ArrayNeed {
         months: months(wanted, |day| day.charge(wanted.bank.nominal)),
         array_to_load: to_load,
         losses: wanted.losses,
-        charge_efficiency: wanted.charge_efficiency,
+        charge_efficiency: Ratio::new::<ratio>(charge.value),
         imp: part.imp,
         module_hot_voltage: hot,
         string_voltage: wanted.bank.charged_cold.unwrap_or(wanted.bank.highest)
@@ -465,7 +470,7 @@ fn clamped(
         step("sun-hours of a day there", found.sun_hours.get::<hour>(), "h", None),
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
         step("lost to dirt, mismatch, wiring and shade", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
-        step("charge efficiency of the bank", wanted.charge_efficiency.get::<ratio>(), "", None),
+        step("part of the charge that the bank gives back", charge.value, "", Some(charge.citation)),
         step(
             "charge that the array must give in a day",
             found.array_charge.get::<uom::si::electric_charge::ampere_hour>(),
@@ -497,12 +502,13 @@ fn tracked(
     let worst = worst_month(wanted);
     let power = module_power(wanted.site, module, worst);
     let efficiency = efficiency(controller);
+    let [_, energy] = wanted.stored;
     let need = EnergyNeed {
         months: months(wanted, |day| day.total),
         array_to_load: to_load,
         losses: wanted.losses,
         controller_efficiency: efficiency,
-        charge_efficiency: wanted.charge_efficiency,
+        charge_efficiency: Ratio::new::<ratio>(energy.value),
         module_power: power,
         in_series: 1,
     };
@@ -515,7 +521,7 @@ fn tracked(
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
         step("lost to dirt, mismatch, wiring and shade", wanted.losses.get::<ratio>(), "", Some(PRACTICE)),
         step("efficiency of the controller", efficiency.get::<ratio>(), "", None),
-        step("charge efficiency of the bank", wanted.charge_efficiency.get::<ratio>(), "", None),
+        step("part of the energy that the bank gives back", energy.value, "", Some(energy.citation)),
         step("energy that the array must give in a day", found.array_energy.get::<watt_hour>(), "Wh", None),
         step("power that gives it in those sun-hours", found.array_power.get::<watt>(), "W", None),
         step("power of a module with the cells of that month", power.get::<watt>(), "W", None),
@@ -544,7 +550,9 @@ fn reached(
     month: usize,
 ) -> Result<Ratio, String> {
     let demand = wanted.months.get(month).map_or(DayDemand::NONE, |d| *d);
-    let kept = (1.0 - wanted.losses.get::<ratio>()) * wanted.charge_efficiency.get::<ratio>();
+    let [charge, energy_part] = wanted.stored;
+    let stored = if controller.kind == Some(ControllerKind::Pwm) { charge } else { energy_part };
+    let kept = (1.0 - wanted.losses.get::<ratio>()) * stored.value;
     let counts = (u32::from(layout.in_series), u32::from(layout.in_parallel));
     let energy =
         day_energy(wanted.site, module, controller, counts, wanted.bank.nominal, month).unwrap_or_default();

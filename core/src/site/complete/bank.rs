@@ -351,6 +351,9 @@ pub(in crate::site) fn needed(
         steps.push(part("left in the cold", found.cold_fraction.value, Some(found.cold_fraction.citation)));
         steps.push(ah("at the end of life, in the cold", found.at_temperature, None));
         steps.push(part("margin", need.margin, None));
+        if found.by_current >= found.capacity {
+            steps.push(ah("for the current of all loads", found.by_current, None));
+        }
         (found.capacity, None)
     } else {
         let mut need = LeadAcidNeed::usual(chemistry, duty.daily, duty.autonomy, duty.coldest, duty.current);
@@ -487,6 +490,7 @@ fn plain(
     let capacity = ElectricCharge::new::<ampere_hour>(rounded);
     let mut bank = entry(
         BankPart {
+            designed: true,
             chemistry: Some(chemistry),
             nominal: Some(nominal),
             capacity: Some(capacity),
@@ -511,7 +515,23 @@ fn of_stock(
     let words = |error: Error| error.to_string();
     let chemistry = battery.chemistry;
     charges_in_the_cold(site, stated, battery)?;
-    let (need, time, mut steps) = needed(chemistry, duty).map_err(words)?;
+    let (mut need, time, mut steps) = needed(chemistry, duty).map_err(words)?;
+    if let Some(limit) = battery.greatest_discharge.filter(|limit| limit.value > 0.0) {
+        let by_current = battery.capacity * (duty.current / limit).get::<ratio>();
+        if by_current > need {
+            need = by_current;
+            steps.push(Step {
+                what: format!(
+                    "for the current of all loads, {} A, at {} A a battery",
+                    digits(duty.current.get::<ampere>()),
+                    digits(limit.get::<ampere>())
+                ),
+                value: need.get::<ampere_hour>(),
+                unit: "Ah",
+                citation: None,
+            });
+        }
+    }
     // A shorter draw than that of the rating yields less; a longer one is no credit.
     let each = match (battery.rate, time) {
         (Some(rate), Some(time)) if time < rate => {
@@ -538,6 +558,21 @@ fn of_stock(
         max_series: battery.max_series.or(stated.max_series).unwrap_or(1000),
         max_parallel: battery.max_parallel.or(stated.max_parallel).unwrap_or(MOST_STRINGS),
     };
+    let strings = libm::ceil((need / each).get::<ratio>() * (1.0 - 1e-12));
+    if strings > f64::from(unit.max_parallel) {
+        return Err(format!(
+            "it takes {} strings of {} Ah for {} Ah, at most {} {}",
+            digits(strings),
+            digits(each.get::<ampere_hour>()),
+            digits(need.get::<ampere_hour>()),
+            unit.max_parallel,
+            if battery.max_parallel.or(stated.max_parallel).is_some() {
+                "by its maker"
+            } else {
+                "by common practice"
+            }
+        ));
+    }
     let found = layout(&unit, nominal, need).map_err(words)?;
     steps.push(Step {
         what: "batteries in series".to_string(),

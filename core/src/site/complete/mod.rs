@@ -16,7 +16,6 @@ use super::lines::{Rejected, Step};
 use super::model::Document;
 use uom::si::electric_charge::ampere_hour;
 use uom::si::electric_current::ampere;
-use uom::si::ratio::ratio;
 use uom::si::thermodynamic_temperature::degree_celsius;
 
 use super::energy::{Demand, demands};
@@ -272,8 +271,9 @@ fn design_arrays(
         let Some(demand) = demands.iter().find(|d| d.banks.contains(&bank)) else { continue };
         let chemistry = site.banks.get(bank).and_then(BankEntry::chemistry);
         let Some(chemistry) = chemistry else { continue };
-        let efficiency = Ratio::new::<ratio>(crate::battery::data(chemistry).charge_efficiency.value);
-        if let Err(problem) = array::design(site, bank, demand, efficiency, part, reasons) {
+        let held = crate::battery::data(chemistry);
+        let stored = [held.charge_efficiency, held.energy_efficiency];
+        if let Err(problem) = array::design(site, bank, demand, stored, part, reasons) {
             problems.push(problem);
         }
     }
