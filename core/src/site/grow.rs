@@ -16,21 +16,41 @@ use super::system::Site;
 use crate::circuit::{Checked, Outcome, capacity};
 use crate::rules::{Check, LoadUse};
 
+/// Where a shared run may grow beside another in one pass.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Beside {
+    /// Nowhere.
+    Nowhere,
+    /// Where the paths have no circuit in common.
+    OtherPaths,
+    /// Where they have none in common that can grow.
+    OtherRuns,
+}
+
 /// Enlarges what fails; `true` where something grew.
 ///
-/// `apart`: a shared run grows in each part of the network that has no run that can grow in common with another's;
-/// else one in all.
+/// In the order of the document: what has a circuit in common with one whose shared run grows waits for the next pass, and
+/// so does what comes behind where nothing may grow beside it.
 pub(super) fn enlarge(
     site: &Site,
     drafts: &mut [Draft],
     planned: &[Option<Planned>],
     flows: &Flows,
-    apart: bool,
+    beside: Beside,
 ) -> Result<bool, Problems> {
     let mut grew = false;
-    // Runs on the path of one whose shared run has grown: what they feed waits for the next pass.
-    let mut waits = vec![false; if apart { planned.len() } else { 0 }];
+    // Circuits that what they feed waits for, once a shared run has grown.
+    let mut waits = vec![false; if beside == Beside::Nowhere { 0 } else { planned.len() }];
     let mut waiting = false;
+    // What grew by itself before.
+    let mut alone = Vec::new();
+    let hold = |waits: &mut [bool], drafts: &[Draft], path: &[usize]| {
+        for &circuit in path.iter().filter(|&&c| beside == Beside::OtherPaths || can_grow(drafts, c)) {
+            if let Some(slot) = waits.get_mut(circuit) {
+                *slot = true;
+            }
+        }
+    };
     let mut problems = Vec::new();
     // Volts won by the next size for the metal it takes: ρ·I·l·(1/A − 1/A') over (A' − A)·l. Growing the best of these
     // first spreads the metal over a path as evenly as the sizes allow (A goes with √I).
@@ -64,6 +84,7 @@ pub(super) fn enlarge(
         {
             if grow(circuit, drafts) {
                 grew = true;
+                alone.push(circuit);
             } else {
                 problems.push(cannot_serve(site, circuit, p, &check));
             }
@@ -80,16 +101,17 @@ pub(super) fn enlarge(
             }
         }
         match worst {
-            Some((c, _)) if c == circuit => grew |= grow(c, drafts),
+            Some((c, _)) if c == circuit => {
+                grew |= grow(c, drafts);
+                alone.push(circuit);
+            }
             // A shared run grows once in a pass: the next pass sees what it won.
-            Some((c, _)) if !apart => return Ok(grow(c, drafts)),
+            Some((c, _)) if beside == Beside::Nowhere => return Ok(grow(c, drafts)),
             Some((c, _)) => {
-                for &on_path in path.iter().filter(|&&c| can_grow(drafts, c)) {
-                    if let Some(slot) = waits.get_mut(on_path) {
-                        *slot = true;
-                    }
+                if !core::mem::replace(&mut waiting, true) {
+                    alone.iter().for_each(|&own| hold(&mut waits, drafts, &flows.path(own)));
                 }
-                waiting = true;
+                hold(&mut waits, drafts, &path);
                 grew |= grow(c, drafts);
             }
             None if p.designed() => problems.push(cannot_serve(site, circuit, p, &check)),

@@ -18,7 +18,7 @@ use super::bank;
 use super::fault::Fault;
 use super::flow::{Flow, Flows, Loops, Network, Relief};
 use super::graph::{Item, Tree};
-use super::grow::{add_far_devices, can_grow, enlarge, relieve_collapse, restart_leaves};
+use super::grow::{Beside, add_far_devices, can_grow, enlarge, relieve_collapse, restart_leaves};
 use super::model::{CircuitEntry, LoadEntry, Return};
 use super::offers::{Offers, complete, joints};
 use super::read::{Problem, Problems};
@@ -140,6 +140,9 @@ const FIND_TEMPERATURES: usize = 6;
 /// parts of the network that have nothing in common then grow at once.
 const ONE_BY_ONE: usize = 50_000;
 
+/// So many times as many: then also parts that have nothing in common but what is stated.
+const MANY: usize = 4;
+
 /// Makes the plan.
 pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
     let alone = ONE_BY_ONE.checked_div(site.circuits.len()).unwrap_or(0).max(FIND_TEMPERATURES);
@@ -185,7 +188,7 @@ fn plan_by(site: &Site, alone: usize) -> Result<Plan, Problems> {
         Flows::new(site, &network, &trees, &loops, &Relief { can: &can, at_once })
     };
     // Passes since all was last begun anew.
-    let mut passes = 0;
+    let mut passes = 0_usize;
     // Passes that only relieved what collapsed.
     let mut reliefs = 0;
     for _ in 0..=most {
@@ -203,8 +206,13 @@ fn plan_by(site: &Site, alone: usize) -> Result<Plan, Problems> {
         for (slot, done) in temperatures.iter_mut().zip(&planned) {
             *slot = done.as_ref().map(|p| p.judgement.temperature.get::<degree_celsius>());
         }
+        let beside = match passes.checked_div(alone) {
+            Some(0) | None => Beside::Nowhere,
+            Some(1..MANY) => Beside::OtherPaths,
+            Some(_) => Beside::OtherRuns,
+        };
         passes += 1;
-        if enlarge(site, &mut drafts, &planned, &flows, passes > alone)? {
+        if enlarge(site, &mut drafts, &planned, &flows, beside)? {
             settled = false;
         } else if !shared_found {
             // Shared runs are found; what hangs on them alone starts anew beside them, and grows no more than it must.
