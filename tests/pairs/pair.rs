@@ -136,6 +136,7 @@ fn not_made(slug: &str) -> &'static str {
         "bank-in-living-space" | "bank-in-engine-space" => "bank-space-not-stated",
         "compensation-missing" | "compensation-not-for-chemistry" => "compensation-not-stated",
         "load-dump" => "load-dump-not-stated",
+        "array-reaches-loads" => "array-reaches-loads-not-checked",
         "bank-too-small" => "capacity-not-checked",
         "disconnect-too-low" => "disconnect-not-checked",
         "reconnect-too-near" => "reconnect-not-stated",

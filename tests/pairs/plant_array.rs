@@ -50,6 +50,11 @@ fn pwm(keys: &str, module: &str) -> Document {
         .with("array", module)
 }
 
+/// One module of 24 V behind a clamp, over a load that bears 20 V.
+fn reached(keys: &str) -> Document {
+    pwm(keys, "voc = '24 V'; imp = '5 A'; vmp = '20.5 V'").with("load", "greatest = '20 V'")
+}
+
 fn voltages() -> Vec<Pair> {
     let wrong = |what, edge, site, twins| Pair::of(Nonconforming, what, edge, site, twins);
     let part = ("R10", "array-voltage-above-part");
@@ -96,6 +101,21 @@ fn voltages() -> Vec<Pair> {
             "cold modules stand within the controller's window",
             controller("operating = ['14 V', '?']"),
             ("37 V", "36.5 V"),
+        ),
+        // 24 V, warmer by the morning of 0 °C than its label: 25.8 V.
+        Pair::of(
+            Danger,
+            ("R11", "array-reaches-loads"),
+            "a clamp keeps the array's voltage from loads that do not bear it",
+            reached("load_dump = ?"),
+            ("true", "false"),
+        ),
+        Pair::of(
+            NotChecked,
+            ("R11", "array-reaches-loads-not-checked"),
+            "what a clamp does with the bank off is stated or not checked",
+            reached("?"),
+            ("load_dump = true", ""),
         ),
         // 12 V of 16 V hot: 16/(0.8369 × 0.9215) = 20.75 V by the label.
         Pair::of(

@@ -80,7 +80,7 @@ fn shade_and_clamps_speak_for_parallel() {
     holds(&report(&sunny("; shade = '0 %'", "5 degC", tracker)), "3 in series, 1 string");
     // Four of them, so that there is a choice.
     let four = |array: &str, controller: &str| {
-        report(&sunny(array, "5 degC", controller).with("load", "current = '11.5 A'; hours = '4.5 h'"))
+        report(&sunny(array, "5 degC", controller).with("load", "current = '10.5 A'; hours = '4.5 h'"))
     };
     holds(&four("", tracker), "4 in series, 1 string");
     holds(&four("", tracker), "series, up to the controller's highest input voltage");

@@ -73,6 +73,14 @@ fn charger(kind: &str, output: &str, at_the_bank: &str) -> Document {
 
 pub fn pairs() -> Vec<Pair> {
     vec![
+        // 5 A of the radio.
+        Pair::of(
+            Nonconforming,
+            ("R16", "converter-overloaded"),
+            "a converter gives what its loads draw",
+            converter("?"),
+            ("5.1 A", "4.9 A"),
+        ),
         // A load that is added: 10 A and its own on a feeder whose 30 A carry 80 % for hours, 24 A.
         Pair::of(
             Nonconforming,
