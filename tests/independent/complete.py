@@ -8,6 +8,8 @@ from energy import Sun, Year, watts
 from plant import Circuit, Network, apparent, starting
 from tables import value
 
+TOGETHER_A = 100.0                                # most that all loads at once may draw: printed
+UNSTATED_EFFICIENCY = 0.85                        # of an inverter, before any is taken: printed nowhere
 ROUTES = {"controller": 1.5, "array": 10.0}       # m, where none is stated: printed among the assumptions
 
 
@@ -48,12 +50,15 @@ class Plant:
     # What is left open.
 
     def least_nominal(self):
-        """Least of 12, 24, 48 V that every load's range admits."""
-        for nominal in (12.0, 24.0, 48.0):
-            loads = [l for l in self.site["load"] if not l.get("ac")]
-            if all(value(l["least"]) < nominal < value(l["greatest"]) for l in loads):
-                return nominal
-        raise ValueError("no nominal voltage suits every load")
+        """Least of 12, 24, 48 V that every load's range admits and that keeps all loads together within 100 A."""
+        loads = [l for l in self.site["load"] if not l.get("ac")]
+        fit = [nominal for nominal in (12.0, 24.0, 48.0)
+               if all(value(l["least"]) < nominal < value(l["greatest"]) for l in loads)]
+        return next((v for v in fit if self.together(v) <= TOGETHER_A * v), fit[-1])
+
+    def together(self, nominal):
+        """Watts that all loads take from a bank of a nominal voltage, those of AC through an inverter yet to be taken."""
+        return sum(watts(l, nominal) / (UNSTATED_EFFICIENCY if l.get("ac") else 1.0) for l in self.site["load"])
 
     def take_inverter(self):
         keys = dict(self.site["inverter"][0])
