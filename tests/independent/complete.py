@@ -57,7 +57,7 @@ class Plant:
         return next((v for v in fit if self.together(v) <= TOGETHER_A * v), fit[-1])
 
     def together(self, nominal):
-        """Watts that all loads take from a bank of a nominal voltage, those of AC through an inverter yet to be taken."""
+        """Watts that all loads take from a bank of a nominal voltage, those of AC through an inverter yet to come."""
         return sum(watts(l, nominal) / (UNSTATED_EFFICIENCY if l.get("ac") else 1.0) for l in self.site["load"])
 
     def take_inverter(self):
@@ -65,6 +65,7 @@ class Plant:
         fit = [i for i in self.stock["inverter"] if value(i["nominal"]) == self.nominal
                and value(i["power"]) >= self.apparent() and value(i["surge"]) >= self.starting()]
         self.inverter = min(fit, key=lambda i: i["price"]) | keys
+        self.other_inverters = [i["name"] for i in fit if i["name"] != min(fit, key=lambda i: i["price"])["name"]]
 
     def take_bank(self):
         if "unit" in self.bank:
@@ -98,7 +99,7 @@ class Plant:
 
     def take_array(self):
         """Fewest modules that give what is needed, at least cost with their controller; every voltage in range."""
-        offers = []
+        offers, self.cut_off_W = [], {}
         year = Year(self)
         for controller in self.stock["controller"]:
             self.controller = controller | {"name": "charge controller"}
@@ -108,7 +109,11 @@ class Plant:
                     need = Sun(self, year).needed()["modules"]
                     strings = max(1, -int(-(need - 1e-9) // series))
                     self.array["strings"] = strings
-                    if self.admitted(Sun(self, year)):
+                    sun = Sun(self, year)
+                    if self.admitted(sun) and self.too_strong(sun):
+                        names = (module["name"], controller["name"])
+                        self.cut_off_W[names] = min(sun.watts(), self.cut_off_W.get(names, sun.watts()))
+                    elif self.admitted(sun):
                         offers.append((series * strings * module["price"] + controller["price"], self.array,
                                        self.controller))
         self.offered_arrays = sorted(offers, key=lambda o: o[0])
@@ -118,8 +123,11 @@ class Plant:
         c = self.controller
         return (sun.cold_Voc() <= min(value(c["greatest_input"]), value(sun.module["greatest_voltage"]))
                 and sun.hot_Vmp() >= self.cold_absorption() + value(c["start_margin"])
-                and sun.bright_Isc() <= value(c["input_current"])
-                and sun.watts() / self.nominal <= 1.25 * value(c["output"]))
+                and sun.bright_Isc() <= value(c["input_current"]))
+
+    def too_strong(self, sun):
+        """More than a quarter above what the controller gives would be cut off."""
+        return sun.watts() / self.nominal > 1.25 * value(self.controller["output"])
 
     # Loads of the inverter.
 

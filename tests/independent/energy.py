@@ -16,8 +16,8 @@ LOST_VOLTS, AGED_VOLTS = 0.03, 0.05
 IRRADIANCE = cell("protection.toml", "continuous-load-factors", "PV source circuit maximum current, 690.8(A)(1): × Isc",
                   "factor")
 MEAN_SUN, BRIGHT_SUN = 0.8, 1.0    # kW/m²
-# Part that a bank gives back: of a charge counted at nominal voltage (not printed), and of an energy, since it goes in at a
-# higher voltage than it comes out (recalled; that of flooded printed, the others not).
+# Part that a bank gives back: of a charge counted at nominal voltage (not printed), and of an energy, since it goes in
+# at a higher voltage than it comes out (recalled; that of flooded printed, the others not).
 CHARGE_EFFICIENCY = {"flooded": 0.85, "agm": 0.9, "lfp": 0.99}
 ENERGY_EFFICIENCY = {"flooded": 0.75, "agm": 0.8, "lfp": 0.93}
 LOW_SUN = 3.0                      # h, of the worst month; below it the sun counts as low: not printed

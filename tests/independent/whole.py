@@ -160,6 +160,12 @@ def array(out, plant, told, text):
         others = [(o[1]["series"], o[1]["strings"]) for o in plant.offered_arrays[1:]]
         if "no other arrangement passes" in told.get("why so", []):
             out.fact(where, "other arrangements that pass", [], others)
+        refused = {}
+        for line in told.get("not taken", []):
+            found = re.match(r"module (.*?) with controller (.*?): ([\d.]+) W of modules over an output of", line)
+            if found:
+                refused[found[1], found[2]] = float(found[3])
+        out.fact(where, "controllers that cut off too much, W", refused, plant.cut_off_W)
     margin = value(plant.controller["start_margin"])
     checks = {
         "against the module's greatest system voltage": (sun.cold_Voc(), value(sun.module["greatest_voltage"])),
@@ -197,6 +203,8 @@ def inverter(out, plant, told, text):
     if found:
         out.number(where, "surge, R16, VA", amount(found[1]), value(i["surge"]))
         out.number(where, "starting, R16, VA", amount(found[2]), plant.starting())
+    passing = [m[1] for m in (re.match(r"inverter (.*?): passes", t) for t in told.get("not taken", [])) if m]
+    out.fact(where, "others that pass", passing, plant.other_inverters)
     volts, farads = plant.bank["highest"], value(i["capacitance"])
     ohm, seconds, joules = sheet.precharge(volts, farads)
     found = re.search(r"resistor of ([\d.]+) Ω for ([\d.]+) s", text)
