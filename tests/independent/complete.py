@@ -58,7 +58,9 @@ class Plant:
 
     def together(self, nominal):
         """Watts that all loads take from a bank of a nominal voltage, those of AC through an inverter yet to come."""
-        return sum(watts(l, nominal) / (UNSTATED_EFFICIENCY if l.get("ac") else 1.0) for l in self.site["load"])
+        inverter = next(iter(self.site.get("inverter", [])), {})
+        through = value(inverter.get("efficiency", UNSTATED_EFFICIENCY))
+        return sum(watts(l, nominal) / (through if l.get("ac") else 1.0) for l in self.site["load"])
 
     def take_inverter(self):
         keys = dict(self.site["inverter"][0])
@@ -99,7 +101,7 @@ class Plant:
 
     def take_array(self):
         """Fewest modules that give what is needed, at least cost with their controller; every voltage in range."""
-        offers, self.cut_off_W = [], {}
+        offers, passing, self.cut_off_W = [], set(), {}
         year = Year(self)
         for controller in self.stock["controller"]:
             self.controller = controller | {"name": "charge controller"}
@@ -116,6 +118,8 @@ class Plant:
                     elif self.admitted(sun):
                         offers.append((series * strings * module["price"] + controller["price"], self.array,
                                        self.controller))
+                        passing.add((module["name"], controller["name"]))
+        self.cut_off_W = {names: least for names, least in self.cut_off_W.items() if names not in passing}
         self.offered_arrays = sorted(offers, key=lambda o: o[0])
         _, self.array, self.controller = self.offered_arrays[0]
 

@@ -185,12 +185,13 @@ class Sun:
         return (self.strings - 1) * IRRADIANCE * value(self.module["isc"]) > value(self.module["series_fuse"])
 
     def needed(self):
-        """Steps of the IEEE 1562 way: ratio, energy, power, power of a warm module, modules."""
+        """Steps of the IEEE 1562 way: ratio, with a stated margin, energy, power, power of a warm module, modules."""
         year, month = self.year, self.year.worst_month()
         critical = self.plant.site["site"].get("critical", False) or year.sun[month] < LOW_SUN
         ratio = cell("battery.toml", "array-to-load-ratio", next(
             r for r in ("critical load, or low sun", "non-critical load, or high and consistent sun")
             if r.startswith("critical") == critical), "high")
+        ratio *= 1 + value(self.plant.site["site"].get("margin", 0.0))
         energy = year.taken(month) * ratio / year.efficiency()
         power = energy / year.sun[month]
         each = value(self.module["power"]) * year.warm(month)
