@@ -11,9 +11,10 @@ SAGS_TO = {"flooded": "flooded lead-acid"}                # row of the Peukert e
 # IEC 62485-2, mA/Ah: recalled, not printed. Equalising or absorption counts.
 GAS_mA_per_Ah = {"flooded": 20.0, "agm": 8.0}
 # Rest volts of a cell at the charge that a disconnect leaves (flooded 20 %, agm and lfp 10 %); volts that it sags per
-# C-rate at 25 °C, twice as much 60 K below. Printed nowhere, found by varying a file: comparing proves their use.
+# C-rate at 25 °C, twice as much so many K below. Printed nowhere, found by varying a file: comparing proves their use.
 LEFT_V = {"flooded": 2.0044, "agm": 1.9934, "lfp": 3.18}
-SAG_Vh = {"flooded": 0.72, "agm": 0.45, "lfp": 0.27}
+SAG_Vh = {"flooded": 0.72, "agm": 0.45, "lfp": 0.167}
+DOUBLES_IN_K = {"flooded": 60, "agm": 60, "lfp": 20}
 ROWS = {"flooded": "flooded, deep cycle", "agm": "AGM", "gel": "gel"}
 RATES = {"flooded": "flooded lead-acid", "agm": "AGM lead-acid", "lfp": "lithium iron phosphate"}
 LFP_CELL_V = {"absorption": (3.45, 3.6), "float": (3.3, 3.4)}       # recalled, printed beside the set points
@@ -74,7 +75,7 @@ def least_disconnect(bank, amps):
 
     Freezing, which asks for more in deep cold, governs at no site here.
     """
-    cold = 2 ** ((25 - value(bank["temperature"][0])) / 60)
+    cold = 2 ** ((25 - value(bank["temperature"][0])) / DOUBLES_IN_K[bank["chemistry"]])
     sag = SAG_Vh[bank["chemistry"]] * amps / bank["capacity"] * cold
     return cells(bank) * (LEFT_V[bank["chemistry"]] - sag)
 

@@ -8,6 +8,8 @@ from energy import Sun, Year, watts
 from plant import Circuit, Network, apparent, starting
 from tables import value
 
+TOGETHER_A = 100.0                                # most that all loads at once may draw: printed
+UNSTATED_EFFICIENCY = 0.85                        # of an inverter, before any is taken: printed nowhere
 ROUTES = {"controller": 1.5, "array": 10.0}       # m, where none is stated: printed among the assumptions
 
 
@@ -48,18 +50,24 @@ class Plant:
     # What is left open.
 
     def least_nominal(self):
-        """Least of 12, 24, 48 V that every load's range admits."""
-        for nominal in (12.0, 24.0, 48.0):
-            loads = [l for l in self.site["load"] if not l.get("ac")]
-            if all(value(l["least"]) < nominal < value(l["greatest"]) for l in loads):
-                return nominal
-        raise ValueError("no nominal voltage suits every load")
+        """Least of 12, 24, 48 V that every load's range admits and that keeps all loads together within 100 A."""
+        loads = [l for l in self.site["load"] if not l.get("ac")]
+        fit = [nominal for nominal in (12.0, 24.0, 48.0)
+               if all(value(l["least"]) < nominal < value(l["greatest"]) for l in loads)]
+        return next((v for v in fit if self.together(v) <= TOGETHER_A * v), fit[-1])
+
+    def together(self, nominal):
+        """Watts that all loads take from a bank of a nominal voltage, those of AC through an inverter yet to come."""
+        inverter = next(iter(self.site.get("inverter", [])), {})
+        through = value(inverter.get("efficiency", UNSTATED_EFFICIENCY))
+        return sum(watts(l, nominal) / (through if l.get("ac") else 1.0) for l in self.site["load"])
 
     def take_inverter(self):
         keys = dict(self.site["inverter"][0])
         fit = [i for i in self.stock["inverter"] if value(i["nominal"]) == self.nominal
                and value(i["power"]) >= self.apparent() and value(i["surge"]) >= self.starting()]
         self.inverter = min(fit, key=lambda i: i["price"]) | keys
+        self.other_inverters = [i["name"] for i in fit if i["name"] != min(fit, key=lambda i: i["price"])["name"]]
 
     def take_bank(self):
         if "unit" in self.bank:
@@ -93,7 +101,7 @@ class Plant:
 
     def take_array(self):
         """Fewest modules that give what is needed, at least cost with their controller; every voltage in range."""
-        offers = []
+        offers, passing, self.cut_off_W = [], set(), {}
         year = Year(self)
         for controller in self.stock["controller"]:
             self.controller = controller | {"name": "charge controller"}
@@ -103,9 +111,15 @@ class Plant:
                     need = Sun(self, year).needed()["modules"]
                     strings = max(1, -int(-(need - 1e-9) // series))
                     self.array["strings"] = strings
-                    if self.admitted(Sun(self, year)):
+                    sun = Sun(self, year)
+                    if self.admitted(sun) and self.too_strong(sun):
+                        names = (module["name"], controller["name"])
+                        self.cut_off_W[names] = min(sun.watts(), self.cut_off_W.get(names, sun.watts()))
+                    elif self.admitted(sun):
                         offers.append((series * strings * module["price"] + controller["price"], self.array,
                                        self.controller))
+                        passing.add((module["name"], controller["name"]))
+        self.cut_off_W = {names: least for names, least in self.cut_off_W.items() if names not in passing}
         self.offered_arrays = sorted(offers, key=lambda o: o[0])
         _, self.array, self.controller = self.offered_arrays[0]
 
@@ -113,8 +127,11 @@ class Plant:
         c = self.controller
         return (sun.cold_Voc() <= min(value(c["greatest_input"]), value(sun.module["greatest_voltage"]))
                 and sun.hot_Vmp() >= self.cold_absorption() + value(c["start_margin"])
-                and sun.bright_Isc() <= value(c["input_current"])
-                and sun.watts() / self.nominal <= 1.25 * value(c["output"]))
+                and sun.bright_Isc() <= value(c["input_current"]))
+
+    def too_strong(self, sun):
+        """More than a quarter above what the controller gives would be cut off."""
+        return sun.watts() / self.nominal > 1.25 * value(self.controller["output"])
 
     # Loads of the inverter.
 

@@ -16,7 +16,11 @@ LOST_VOLTS, AGED_VOLTS = 0.03, 0.05
 IRRADIANCE = cell("protection.toml", "continuous-load-factors", "PV source circuit maximum current, 690.8(A)(1): × Isc",
                   "factor")
 MEAN_SUN, BRIGHT_SUN = 0.8, 1.0    # kW/m²
-CHARGE_EFFICIENCY = {"flooded": 0.85, "agm": 0.9, "lfp": 0.99}     # that of flooded printed, the others not
+# Part that a bank gives back: of a charge counted at nominal voltage (not printed), and of an energy, since it goes in
+# at a higher voltage than it comes out (recalled; that of flooded printed, the others not).
+CHARGE_EFFICIENCY = {"flooded": 0.85, "agm": 0.9, "lfp": 0.99}
+ENERGY_EFFICIENCY = {"flooded": 0.75, "agm": 0.8, "lfp": 0.93}
+LOW_SUN = 3.0                      # h, of the worst month; below it the sun counts as low: not printed
 
 
 def hours(load):
@@ -95,9 +99,15 @@ class Year:
         return power * lit * self.sun[month] * self.warm(month) * self.efficiency()
 
     def efficiency(self):
-        return (1 - LOST_BEFORE_CONTROLLER) * value(self.plant.controller["efficiency"]) * self.stored()
+        return (1 - LOST_BEFORE_CONTROLLER) * value(self.plant.controller["efficiency"]) * self.given_back()
+
+    def given_back(self):
+        """A tracking controller hands on energy; no site here has another."""
+        assert self.plant.controller["kind"] == "mppt"
+        return ENERGY_EFFICIENCY[self.plant.bank["chemistry"]]
 
     def stored(self):
+        """Of a current for hours, counted at nominal voltage."""
         return CHARGE_EFFICIENCY[self.plant.bank["chemistry"]]
 
     def warm(self, month):
@@ -175,12 +185,13 @@ class Sun:
         return (self.strings - 1) * IRRADIANCE * value(self.module["isc"]) > value(self.module["series_fuse"])
 
     def needed(self):
-        """Steps of the IEEE 1562 way: ratio, energy, power, power of a warm module, modules."""
+        """Steps of the IEEE 1562 way: ratio, with a stated margin, energy, power, power of a warm module, modules."""
         year, month = self.year, self.year.worst_month()
-        critical = self.plant.site["site"].get("critical", False)
+        critical = self.plant.site["site"].get("critical", False) or year.sun[month] < LOW_SUN
         ratio = cell("battery.toml", "array-to-load-ratio", next(
             r for r in ("critical load, or low sun", "non-critical load, or high and consistent sun")
             if r.startswith("critical") == critical), "high")
+        ratio *= 1 + value(self.plant.site["site"].get("margin", 0.0))
         energy = year.taken(month) * ratio / year.efficiency()
         power = energy / year.sun[month]
         each = value(self.module["power"]) * year.warm(month)

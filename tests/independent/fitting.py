@@ -14,7 +14,8 @@ from report import amount
 from tables import area, table, value
 
 SHELF = {"us": [f"{n} AWG" for n in (18, 16, 14, 12, 10, 8, 6, 4, 3, 2, 1)],
-         "iec": [], "craft_iso": [f"{n} mm2" for n in ("0.75", "1", "1.5", "2.5", "4", "6", "10", "16", "25", "35")]}
+         "iec": [f"{n} mm2" for n in ("1.5", "2.5", "4", "6", "10", "16", "25", "35")],
+         "craft_iso": [f"{n} mm2" for n in ("0.75", "1", "1.5", "2.5", "4", "6", "10", "16", "25", "35")]}
 
 
 def three(text):
@@ -69,9 +70,13 @@ def shelf(out, plant, circuit, told):
 def smaller(out, plant, printed, assumed, finished, size, reason, verdict):
     name = finished.circuit.name
     changed = printed | {name: printed[name] | {"size": size}}
-    network, _, of_array = plant.network(changed, assumed)
-    circuit = next(c for c in [*network.circuits, *filter(None, [of_array])] if c.name == name)
-    if not reason.label.startswith(("voltage", "least")):
+    network, charger, of_array = plant.network(changed, assumed)
+    circuit = next(c for c in [*network.circuits, *filter(None, [of_array])] if c.name == (reason.path or name))
+    if reason.path and circuit is charger:
+        ours = ChargerRun(network, circuit)
+    elif reason.path:
+        ours = Expectation(network, circuit, finished.network)
+    elif not reason.label.startswith(("voltage", "least")):
         ours = copy.copy(finished)                        # told with the currents of the size that was taken
         ours.circuit = circuit
     elif isinstance(finished, ArrayRun):
@@ -243,7 +248,7 @@ def buying(out, plant, printed, network, of_array, text):
     for count, size in re.findall(r"(\d+) for ([\d./]+ \S+?)(?:,|$)", next(l[2] for l in lines if "sleeve" in l[2])):
         out.number("to buy", f"sleeves for {size}", (int(count), 0), lugs.get(size, 0))
     for volts in re.findall(r"max\. ([\d.]+) V DC?(?! , Isc)", text.split("\nLabels, by the line\n", 1)[1]):
-        if not plant.array or abs(float(volts) - Sun(plant, plant.year).cold_Voc()) > 0.01:
+        if not plant.array or abs(float(volts) - Sun(plant, plant.year).cold_Voc()) > 0.05:
             out.number("label", "greatest volts", amount(volts), plant.bank["highest"])
     sleeves = sum(l[0] for l in lines if l[2].startswith("heat-shrink"))
     out.number("to buy", "sleeves", (sleeves, 0), sum(lugs.values()))

@@ -60,14 +60,15 @@ class Row:
             most = up_to + meter_A(up_to)
             self.volts = None
         else:
-            through, _ = tested(network, circuit.ends[1])
+            through, volts = tested(network, circuit.ends[1])
             self.amps = through[name]
             self.tolerance = SPREAD * self.amps + meter_A(self.amps)
             most = self.amps + meter_A(self.amps)
             path = list(network.path(root, circuit.ends[1]))
             lowest = network.nominal - sum(through[c.name] * hot(network, c) for c in path)
             highest = network.nominal - sum(through[c.name] * c.cold_ohms() for c in path)
-            self.volts = (lowest - meter_V(lowest), highest + meter_V(lowest))
+            error = meter_V(volts[circuit.ends[1]])       # that of the expected reading
+            self.volts = (lowest - error, highest + error)
         self.millivolts = 1000 * self.amps * circuit.ohms(20)
         # The meter's error of volts is that of the expected reading, not of the reading at the greater current.
         self.most = 1000 * (most * ohms_hot + meter_V(self.amps * ohms_hot))

@@ -8,7 +8,7 @@ import report
 import said
 import sheet
 from complete import Plant
-from energy import MONTHS, Sun, watts
+from energy import MONTHS, Sun
 from report import NUMBER, amount
 from tables import value
 
@@ -88,8 +88,8 @@ def bank(out, plant, told, text):
     volts = next((t for t in told["steps"] if t.startswith("nominal voltage")), None)
     if volts:
         out.number(where, "nominal voltage, V", amount(told["steps"][volts]), plant.nominal)
-        together = sum(watts(l, plant.nominal) for l in plant.site["load"])
-        out.number(where, "all loads together, W", amount(re.search(r"together, (.*? W)", volts)[1]), together)
+        out.number(where, "all loads together, W", amount(re.search(r"together, (.*? W)", volts)[1]),
+                   plant.together(plant.nominal))
     needed, lasts = re.match(r"(\S+) Ah needed; lasts (\S+) d", told["capacity"][0]).groups()
     out.number(where, "capacity needed, Ah", amount(needed), held.needed)
     out.number(where, "lasts, d", said.digits(lasts), held.lasts(b["capacity"]))
@@ -149,7 +149,7 @@ def array(out, plant, told, text):
             "demand of a mean day in the worst month": year.taken(month), "sun-hours of a day there": year.sun[month],
             "array-to-load ratio": needed["ratio"], "lost to dirt, mismatch, wiring and shade": 0.1,
             "efficiency of the controller": value(plant.controller["efficiency"]),
-            "charge efficiency of the bank": year.stored(),
+            "part of the energy that the bank gives back": year.given_back(),
             "energy that the array must give in a day": needed["energy"],
             "power that gives it in those sun-hours": needed["power"],
             "power of a module with the cells of that month": needed["each"],
@@ -160,6 +160,12 @@ def array(out, plant, told, text):
         others = [(o[1]["series"], o[1]["strings"]) for o in plant.offered_arrays[1:]]
         if "no other arrangement passes" in told.get("why so", []):
             out.fact(where, "other arrangements that pass", [], others)
+        refused = {}
+        for line in told.get("not taken", []):
+            found = re.match(r"module (.*?) with controller (.*?): ([\d.]+) W of modules over an output of", line)
+            if found:
+                refused[found[1], found[2]] = float(found[3])
+        out.fact(where, "controllers that cut off too much, W", refused, plant.cut_off_W)
     margin = value(plant.controller["start_margin"])
     checks = {
         "against the module's greatest system voltage": (sun.cold_Voc(), value(sun.module["greatest_voltage"])),
@@ -190,12 +196,15 @@ def inverter(out, plant, told, text):
                                    (value(i["power"]), value(i["surge"]), plant.ac_watts(), plant.starting()),
                                    strict=True):
         out.number(where, word, amount(printed), ours)
-    found = re.search(r"continuous power against its loads: ([\d.]+) W, at least ([\d.]+) W", text)
+    found = re.search(r"continuous power against its loads: ([\d.]+) VA, at least ([\d.]+) VA", text)
+    out.number(where, "power, R16, VA", amount(found[1]), value(i["power"]))
     out.number(where, "loads together, VA", amount(found[2]), plant.apparent())
-    found = re.search(r"while the largest load starts: ([\d.]+) W, at least ([\d.]+) W", text)
+    found = re.search(r"while the largest load starts: ([\d.]+) VA, at least ([\d.]+) VA", text)
     if found:
-        out.number(where, "surge, R16, W", amount(found[1]), value(i["surge"]))
+        out.number(where, "surge, R16, VA", amount(found[1]), value(i["surge"]))
         out.number(where, "starting, R16, VA", amount(found[2]), plant.starting())
+    passing = [m[1] for m in (re.match(r"inverter (.*?): passes", t) for t in told.get("not taken", [])) if m]
+    out.fact(where, "others that pass", passing, plant.other_inverters)
     volts, farads = plant.bank["highest"], value(i["capacitance"])
     ohm, seconds, joules = sheet.precharge(volts, farads)
     found = re.search(r"resistor of ([\d.]+) Ω for ([\d.]+) s", text)
@@ -225,7 +234,7 @@ def charging(out, plant, plant_said, told, text):
     most, hours = plant.charge_amps()
     capacity = b["capacity"]
     found = re.search(r"R11 bank .*?: ([\d.]+) A of all sources, at most ([\d.]+) A", text)
-    out.number(where, "sources, A", amount(found[1]), hours if plant.controller else most)
+    out.number(where, "sources, A", amount(found[1]), most)
     limit = value(b["greatest_charge"]) if "greatest_charge" in b else banks.rate(b, "recommended_high") * capacity
     out.number(where, "  at most", amount(found[2]), limit)
     found = re.search(r"([\d.]+) A of all sources for hours, ([\d.]+) A mix and fill", text)
