@@ -15,8 +15,9 @@ use uom::si::time::day;
 
 use super::check::charge::source_of;
 use super::complete::Reasons;
-use super::complete::bank::{Duty, needed, temperatures};
+use super::complete::bank::{Duty, temperatures};
 use super::complete::inverter::demand;
+use super::complete::need::needed;
 use super::energy::{Demand, ac_loads};
 use super::finding::digits;
 use super::lines::{ArrayLine, BankLine, DemandLine, GeneratorLine, InverterLine, Step};

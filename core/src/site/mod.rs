@@ -33,6 +33,7 @@ mod state;
 mod supply;
 mod system;
 mod text;
+mod told;
 mod trials;
 mod trust;
 mod wiring;

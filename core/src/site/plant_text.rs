@@ -222,7 +222,7 @@ fn generator(line: &GeneratorLine, f: &mut fmt::Formatter<'_>) -> fmt::Result {
             f,
             "recharge",
             &format!(
-                "{:.1} h from the usual depth to full; lead-acid to 98 %, its absorption tail included",
+                "{:.1} h from the usual depth to full (lead-acid to 98 %, with its absorption; others at full current)",
                 time.get::<hour>()
             ),
         )?;

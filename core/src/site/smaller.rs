@@ -6,6 +6,7 @@
 use alloc::vec;
 use alloc::vec::Vec;
 
+use uom::si::electric_current::ampere;
 use uom::si::electric_potential::volt;
 
 use super::flow::Flows;
@@ -14,7 +15,7 @@ use super::plan::{Draft, Planned, Reason, Refused};
 use super::system::Site;
 use crate::cable::Conductor;
 use crate::circuit::{Checked, Outcome, Relation, judge};
-use crate::quantity::ElectricPotential;
+use crate::quantity::{ElectricCurrent, ElectricPotential};
 use crate::rules::Check;
 
 /// A finished plan as the neighbourhood of one circuit.
@@ -77,8 +78,10 @@ impl<'a> Neighbours<'a> {
         if let Some(failed) = judged.first_failure() {
             return Some(Reason::Check(*failed));
         }
-        let lost: ElectricPotential =
-            planned.judgement.current * (judged.resistance - planned.judgement.resistance);
+        // At cut-off flows what is drawn there: not what the sources drive, nor what is drawn at the highest voltage.
+        let drawn =
+            planned.flow.low_current.map_or(planned.judgement.current, ElectricCurrent::new::<ampere>);
+        let lost: ElectricPotential = drawn * (judged.resistance - planned.judgement.resistance);
         let lost = lost.get::<volt>();
         // What hangs behind it loses those volts too.
         for other in self.behind(circuit) {

@@ -2,6 +2,7 @@
 //!
 //! They limit themselves: what they can give is their design current, and no fuse is operated by it.
 
+use alloc::collections::BTreeMap;
 use alloc::vec;
 use alloc::vec::Vec;
 
@@ -11,17 +12,14 @@ use uom::si::electric_potential::volt;
 use super::flow::Flows;
 use super::graph::{Item, Tree};
 use super::parts::Sense;
-use super::system::{BankEntry, FeedKind, Site};
+use super::system::{FeedKind, Site};
 use crate::rules::LoadUse;
 
-/// Sums of what hangs at or below each node; what reaches an item that `ends` it goes no further.
-fn below_until(tree: &Tree, own: impl Fn(Item) -> f64, ends: impl Fn(Item) -> bool) -> Vec<f64> {
+/// Sums of what hangs at or below each node.
+fn below(tree: &Tree, own: impl Fn(Item) -> f64) -> Vec<f64> {
     let mut sums: Vec<f64> = tree.nodes.iter().map(|node| own(node.item)).collect();
     for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
         let amps = sums.get(index).copied().unwrap_or(0.0);
-        if ends(node.item) {
-            continue;
-        }
         if let Some(parent) = sums.get_mut(node.parent) {
             *parent += amps;
         }
@@ -29,9 +27,24 @@ fn below_until(tree: &Tree, own: impl Fn(Item) -> f64, ends: impl Fn(Item) -> bo
     sums
 }
 
-/// Sums of what hangs at or below each node.
-fn below(tree: &Tree, own: impl Fn(Item) -> f64) -> Vec<f64> {
-    below_until(tree, own, |_| false)
+/// The nodes whose circuits lie between a node and another: up from the first, and down to the second.
+fn between(tree: &Tree, first: usize, second: usize) -> Vec<usize> {
+    let up = |mut node: usize| {
+        let mut path = Vec::new();
+        while node != 0 {
+            path.push(node);
+            node = tree.nodes.get(node).map_or(0, |n| n.parent);
+        }
+        path
+    };
+    let (mut one, mut other) = (up(first), up(second));
+    // What both have in common lies above where they meet.
+    while !one.is_empty() && one.last() == other.last() {
+        one.pop();
+        other.pop();
+    }
+    one.append(&mut other);
+    one
 }
 
 impl Flows {
@@ -44,18 +57,44 @@ impl Flows {
         if !tree.nodes.iter().any(|node| matches!(node.item, Item::Charger(_))) {
             return;
         }
-        // A bank on the way takes what comes: beyond it flows what the document states of the link.
-        let is_bank = |item: Item| matches!(item, Item::Bank(i) if site.banks.get(i).is_some_and(BankEntry::is_battery));
-        let charge = below_until(tree, limit, is_bank);
-        // Volts lost on the way to the bank while every source gives all it may.
-        let mut lost = vec![0.0; tree.nodes.len()];
+        // Each fills its own bank, where that stands in this network; a bank on the way takes nothing of it.
+        let places: BTreeMap<Item, usize> =
+            tree.nodes.iter().enumerate().map(|(index, node)| (node.item, index)).collect();
+        let way = |index: usize, charger: usize| {
+            let own = site.chargers.get(charger).and_then(|c| c.bank);
+            let bank = own.and_then(|bank| places.get(&Item::Bank(bank))).copied().unwrap_or(0);
+            between(tree, index, bank)
+        };
+        let chargers = || {
+            tree.nodes.iter().enumerate().filter_map(|(index, node)| match node.item {
+                Item::Charger(charger) => Some((index, charger)),
+                _ => None,
+            })
+        };
+        let mut charge = vec![0.0; tree.nodes.len()];
+        for (index, charger) in chargers() {
+            for node in way(index, charger) {
+                if let Some(sum) = charge.get_mut(node) {
+                    *sum += limit(Item::Charger(charger));
+                }
+            }
+        }
+        let ohms: Vec<f64> = tree
+            .nodes
+            .iter()
+            .map(|node| node.circuit.and_then(|c| self.circuits.get(c)).map_or(0.0, |flow| flow.ohms))
+            .collect();
+        // Volts lost on the way to its bank, behind its own circuit, while every source gives all it may.
+        let lost = |index: usize, charger: usize| -> f64 {
+            let way = way(index, charger);
+            let each = |node: usize| {
+                charge.get(node).copied().unwrap_or(0.0) * ohms.get(node).copied().unwrap_or(0.0)
+            };
+            way.into_iter().filter(|node| *node != index).map(each).sum()
+        };
         for (index, node) in tree.nodes.iter().enumerate().skip(1) {
             let Some(flow) = node.circuit.and_then(|c| self.circuits.get_mut(c)) else { continue };
-            let amps = if is_bank(node.item) { 0.0 } else { charge.get(index).copied().unwrap_or(0.0) };
-            let before = lost.get(node.parent).copied().unwrap_or(0.0);
-            if let Some(own) = lost.get_mut(index) {
-                *own = before + amps * flow.ohms;
-            }
+            let amps = charge.get(index).copied().unwrap_or(0.0);
             let Item::Charger(charger) = node.item else {
                 if amps > flow.current {
                     // By the sources, and no more by the loads.
@@ -77,7 +116,7 @@ impl Flows {
             flow.started = None;
             flow.least_voltage = None;
             flow.beginning = flow.highest;
-            flow.drop_before = before.min(0.5 * flow.highest);
+            flow.drop_before = lost(index, charger).min(0.5 * flow.highest);
             flow.charged = true;
             let sensed = site.chargers.get(charger).and_then(|c| c.charging.sense) == Some(Sense::Bank);
             flow.usage = if sensed { LoadUse::Other } else { LoadUse::Charging };

@@ -173,7 +173,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
     }
 
     /// The network once more while one node's own load starts (R3: solved): one of a kind draws its start current, an
-    /// inverter its surge.
+    /// inverter its surge. Fills `extra` with what comes on top of `running` at the node and on its way.
     ///
     /// The source holds its terminals: of a network that does not collapse only the branch of that node matters.
     fn started(
@@ -182,6 +182,7 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         branches: &mut Branches,
         index: usize,
         (emf, collapsed): (f64, bool),
+        (running, extra): (&[NodeState], &mut [Option<f64>]),
     ) -> Option<(f64, f64)> {
         let node = tree.nodes.get(index)?;
         if self.is_off(node.item) {
@@ -216,10 +217,32 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
             branches.of(self, tree, index)?
         };
         let starting = branch.get_mut(place)?;
-        let running = core::mem::replace(&mut starting.load, load);
+        let usual = core::mem::replace(&mut starting.load, load);
         let above = starting.parent;
         let solved = run(branch, ElectricPotential::new::<volt>(emf));
-        branch.get_mut(place)?.load = running;
+        branch.get_mut(place)?.load = usual;
+        let amps = |states: &[NodeState], at: usize| {
+            states.get(at).map_or(0.0, |state| libm::fabs(state.current.get::<ampere>()))
+        };
+        // Without a solution what it draws on top stands for the whole way.
+        let alone = running.get(index).and_then(|own| {
+            start(self.site, node.item, libm::fabs(own.current.get::<ampere>()), own.voltage.get::<volt>())
+        });
+        let (mut here, mut there) = (index, place);
+        loop {
+            let more = match &solved {
+                Ok(solved) => Some((amps(solved, there) - amps(running, here)).max(0.0)),
+                Err(_) => alone,
+            };
+            if let Some(extra) = extra.get_mut(here) {
+                *extra = if *extra > more { *extra } else { more };
+            }
+            if here == 0 {
+                break;
+            }
+            here = tree.nodes.get(here)?.parent;
+            there = branch.get(there)?.parent;
+        }
         let Ok(solved) = solved else { return Some((0.0, 0.0)) };
         let beginning = solved.get(above)?.voltage.get::<volt>();
         Some((beginning, libm::fabs(solved.get(place)?.current.get::<ampere>())))
@@ -238,10 +261,11 @@ impl<F: Fn(usize) -> f64> Solver<'_, F> {
         let long = continuous_currents(site, self.drawn, tree, solved);
         let single = single_currents(site, tree, solved);
         let mut branches = Branches::default();
+        // The largest start or surge at each node or behind it, A on top: one at a time (R16).
+        let mut starts: Vec<Option<f64>> = vec![None; tree.nodes.len()];
         let started: Vec<Option<(f64, f64)>> = (0..tree.nodes.len())
-            .map(|index| self.started(tree, &mut branches, index, (emf, collapsed)))
+            .map(|index| self.started(tree, &mut branches, index, (emf, collapsed), (solved, &mut starts)))
             .collect();
-        let starts = starts(self, tree, solved, &started);
         let mut path_ohms = vec![0.0; tree.nodes.len()];
         for (index, node) in tree.nodes.iter().enumerate() {
             let (Some(circuit), Some(state)) = (node.circuit, solved.get(index)) else { continue };
@@ -350,37 +374,6 @@ fn single_currents(site: &Site, tree: &Tree, states: &[NodeState]) -> Vec<f64> {
         let own = largest.get(index).copied().unwrap_or(0.0);
         if let Some(parent) = largest.get_mut(node.parent) {
             *parent = parent.max(own);
-        }
-    }
-    largest
-}
-
-/// The largest start or surge at each node or behind it, A on top: one at a time (R16).
-fn starts<F: Fn(usize) -> f64>(
-    solver: &Solver<'_, F>,
-    tree: &Tree,
-    states: &[NodeState],
-    started: &[Option<(f64, f64)>],
-) -> Vec<Option<f64>> {
-    let mut largest: Vec<Option<f64>> = tree
-        .nodes
-        .iter()
-        .zip(states)
-        .zip(started)
-        .map(|((n, s), started)| {
-            let (amps, volts) = (libm::fabs(s.current.get::<ampere>()), s.voltage.get::<volt>());
-            match (n.item, started) {
-                _ if solver.is_off(n.item) => None,
-                // An inverter draws its surge at the volts of the surge, where there are any.
-                (Item::Inverter(_), Some((_, surge))) if *surge > 0.0 => Some((surge - amps).max(0.0)),
-                _ => start(solver.site, n.item, amps, volts),
-            }
-        })
-        .collect();
-    for (index, node) in tree.nodes.iter().enumerate().skip(1).rev() {
-        let own = largest.get(index).copied().flatten();
-        if let (Some(own), Some(parent)) = (own, largest.get_mut(node.parent)) {
-            *parent = Some(parent.map_or(own, |p| p.max(own)));
         }
     }
     largest

@@ -25,7 +25,8 @@ use crate::battery::{
 use crate::quantity::{
     ChargeRate, ElectricCurrent, ElectricalResistance, Ratio, StateOfCharge, TemperatureInterval,
 };
-use crate::site::complete::bank::{Duty, needed, temperatures, was_designed};
+use crate::site::complete::bank::{Duty, temperatures, was_designed};
+use crate::site::complete::need::needed;
 use crate::site::energy::Demand;
 use crate::site::finding::{Findings, Severity, digits};
 use crate::site::parts::{BankPart, Room, TakeOff};

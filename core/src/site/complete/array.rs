@@ -11,7 +11,7 @@ use uom::si::power::watt;
 use uom::si::ratio::ratio;
 use uom::si::time::hour;
 
-use super::{ArrayReason, Reasons, problem, stock};
+use super::{ArrayReason, Reasons, plain, problem, stock};
 use crate::array::{
     ARRAY_TO_LOAD, ArrayNeed, EnergyNeed, Exposure, Layout, LoadClass, Module, NeedMonth, Preference,
     StringDevice, array_need, energy_need, layouts, string_voltages, sun_hours,
@@ -19,9 +19,7 @@ use crate::array::{
 use crate::battery::Datum;
 use crate::citation::{Citation, Seen};
 use crate::error::Error;
-use crate::quantity::{
-    ElectricCurrent, ElectricPotential, Power, Ratio, RatioPerTemperature, ThermodynamicTemperature, Time,
-};
+use crate::quantity::{Energy, Power, Ratio, Time};
 use crate::site::energy::{DayDemand, Demand};
 use crate::site::finding::digits;
 use crate::site::lines::{Rejected, Step};
@@ -38,11 +36,6 @@ const PRACTICE: Citation =
     Citation::new("common practice, no source", "dirt, mismatch, wiring", Seen::Practice);
 /// Most modules that are tried beyond the number that energy asks for: whole strings need a few more.
 const MORE: u16 = 12;
-/// Output ratings of plain controllers, A. Common practice, no source.
-const OUTPUTS_A: [f64; 10] = [10.0, 15.0, 20.0, 30.0, 40.0, 50.0, 60.0, 70.0, 85.0, 100.0];
-/// Input ratings of plain controllers, V. Common practice, no source.
-const INPUTS_V: [f64; 3] = [75.0, 150.0, 250.0];
-
 /// Takes over the stated arrays; those that state no number of modules are returned, to be designed.
 pub(super) fn take(document: &Document, site: &mut Site, problems: &mut Vec<Problem>) -> Vec<ArrayPart> {
     let mut open = Vec::new();
@@ -190,7 +183,7 @@ pub(super) fn design(
         .filter(|c| theirs.map_or(site.controllers.len() == 1, |name| *name == c.name))
         .cloned()
         .collect();
-    let generic_modules = [plain_module()];
+    let generic_modules = [plain::module()];
     let modules: &[ModulePart] = if !own.is_empty() {
         &own
     } else if site.stock.modules.is_empty() {
@@ -212,7 +205,7 @@ pub(super) fn design(
         let controllers: &[ControllerPart] = if !theirs.is_empty() {
             &theirs
         } else if site.stock.controllers.is_empty() {
-            plain = plain_controllers();
+            plain = plain::controllers();
             &plain
         } else {
             &site.stock.controllers
@@ -365,7 +358,7 @@ fn try_one(
     let class = ARRAY_TO_LOAD.iter().find(|row| row.class == wanted.class);
     let (to_load, citation) = class.map_or((1.2, None), |row| (row.most, Some(row.citation)));
     let margin = wanted.site.place.margin.map_or(0.0, |m| m.get::<ratio>());
-    let to_load = Ratio::new::<ratio>(to_load * (1.0 + margin));
+    let to_load = (Ratio::new::<ratio>(to_load), margin);
     let (mut steps, least, worst_month) = if controller.kind == Some(ControllerKind::Pwm) {
         clamped(wanted, part, module, controller, to_load, citation)?
     } else {
@@ -437,7 +430,7 @@ fn clamped(
     part: &ModulePart,
     module: &Module,
     controller: &ControllerPart,
-    to_load: Ratio,
+    (to_load, margin): (Ratio, f64),
     citation: Option<Citation>,
 ) -> Result<(Vec<Step>, u16, usize), String> {
     let words = |error: Error| error.to_string();
@@ -449,7 +442,7 @@ fn clamped(
     let [charge, _] = wanted.stored;
     let need = ArrayNeed {
         months: months(wanted, |day| day.charge(wanted.bank.nominal)),
-        array_to_load: to_load,
+        array_to_load: to_load * (1.0 + margin),
         losses: wanted.losses,
         charge_efficiency: Ratio::new::<ratio>(charge.value),
         imp: part.imp,
@@ -460,7 +453,7 @@ fn clamped(
     let found = array_need(&need).map_err(words)?;
     let step =
         |what: &str, value: f64, unit, citation| Step { what: what.to_string(), value, unit, citation };
-    let steps = alloc::vec![
+    let mut steps = alloc::vec![
         step(
             "demand of a mean day in the worst month",
             found.demand.get::<uom::si::electric_charge::ampere_hour>(),
@@ -486,6 +479,7 @@ fn clamped(
         step("strings, before rounding up", found.strings_exact, "", None),
         step("modules in series, before rounding up", found.in_series_exact, "", None),
     ];
+    add_margin(&mut steps, margin);
     let modules = u16::try_from(found.modules)
         .map_err(|_| "it would take more modules than can be counted".to_string())?;
     Ok((steps, modules, found.worst_month))
@@ -495,17 +489,23 @@ fn tracked(
     wanted: &Wanted<'_>,
     module: &Module,
     controller: &ControllerPart,
-    to_load: Ratio,
+    (to_load, margin): (Ratio, f64),
     citation: Option<Citation>,
 ) -> Result<(Vec<Step>, u16, usize), String> {
-    // The month decides the temperature, the temperature the power: the worst month by demand over sun comes first.
-    let worst = worst_month(wanted);
+    let worst = worst_month(wanted, module);
     let power = module_power(wanted.site, module, worst);
+    // Only that month counts: by demand over sun alone another may seem worse, whose cells are cooler.
+    let mut months = months(wanted, |day| day.total);
+    for (index, month) in months.iter_mut().enumerate() {
+        if index != worst {
+            month.demand = Energy::default();
+        }
+    }
     let efficiency = efficiency(controller);
     let [_, energy] = wanted.stored;
     let need = EnergyNeed {
-        months: months(wanted, |day| day.total),
-        array_to_load: to_load,
+        months,
+        array_to_load: to_load * (1.0 + margin),
         losses: wanted.losses,
         controller_efficiency: efficiency,
         charge_efficiency: Ratio::new::<ratio>(energy.value),
@@ -515,7 +515,7 @@ fn tracked(
     let found = energy_need(&need).map_err(|error| error.to_string())?;
     let step =
         |what: &str, value: f64, unit, citation| Step { what: what.to_string(), value, unit, citation };
-    let steps = alloc::vec![
+    let mut steps = alloc::vec![
         step("demand of a mean day in the worst month", found.demand.get::<watt_hour>(), "Wh", None),
         step("sun-hours of a day there", found.sun_hours.get::<hour>(), "h", None),
         step("array-to-load ratio", to_load.get::<ratio>(), "", citation),
@@ -527,16 +527,26 @@ fn tracked(
         step("power of a module with the cells of that month", power.get::<watt>(), "W", None),
         step("modules, before rounding up", found.modules_exact, "", None),
     ];
+    add_margin(&mut steps, margin);
     let modules = u16::try_from(found.modules)
         .map_err(|_| "it would take more modules than can be counted".to_string())?;
     Ok((steps, modules, found.worst_month))
 }
 
-/// Month with the greatest demand over sun.
-fn worst_month(wanted: &Wanted<'_>) -> usize {
+/// The site's margin, behind the ratio that it multiplies.
+fn add_margin(steps: &mut Vec<Step>, margin: f64) {
+    let place = steps.iter().position(|s| s.what == "array-to-load ratio").map_or(steps.len(), |at| at + 1);
+    if margin > 0.0 {
+        steps.insert(place, Step { what: "margin".to_string(), value: margin, unit: "", citation: None });
+    }
+}
+
+/// Month that takes the most modules: demand over sun and over what a module gives with the cells of that month.
+fn worst_month(wanted: &Wanted<'_>, module: &Module) -> usize {
     let burden = |month: usize| {
         let demand = wanted.months.get(month).map_or(0.0, |d| d.total.get::<watt_hour>());
-        demand / wanted.sun.get(month).map_or(1.0, Time::get::<hour>).max(1e-9)
+        let sun = wanted.sun.get(month).map_or(1.0, Time::get::<hour>).max(1e-9);
+        demand / sun / module_power(wanted.site, module, month).get::<watt>().max(1e-9)
     };
     (0..12).fold(0, |worst, month| if burden(month) > burden(worst) { month } else { worst })
 }
@@ -560,60 +570,4 @@ fn reached(
         return Err("there is no demand to charge for".to_string());
     }
     Ok(energy * kept / demand.total)
-}
-
-/// A plain module of crystalline silicon, 36 cells: usual figures. Common practice, no source.
-fn plain_module() -> ModulePart {
-    let per_kelvin =
-        |value: f64| Some(RatioPerTemperature::new::<uom::si::temperature_coefficient::per_kelvin>(value));
-    ModulePart {
-        name: "plain 100 W, 36 cells".to_string(),
-        line: 0,
-        power: Power::new::<watt>(100.0),
-        voc: ElectricPotential::new::<volt>(22.5),
-        isc: ElectricCurrent::new::<ampere>(5.8),
-        vmp: ElectricPotential::new::<volt>(18.5),
-        imp: ElectricCurrent::new::<ampere>(5.4),
-        voc_coefficient: per_kelvin(-0.0033),
-        isc_coefficient: per_kelvin(0.0005),
-        power_coefficient: per_kelvin(-0.0043),
-        noct: Some(ThermodynamicTemperature::new::<uom::si::thermodynamic_temperature::degree_celsius>(47.0)),
-        series_fuse: Some(ElectricCurrent::new::<ampere>(15.0)),
-        greatest_voltage: Some(ElectricPotential::new::<volt>(600.0)),
-        rear_gain: None,
-        cells: Some(36),
-        price: None,
-        count: None,
-    }
-}
-
-/// Plain tracking controllers, smallest first: usual figures. Common practice, no source.
-fn plain_controllers() -> Vec<ControllerPart> {
-    let mut list = Vec::new();
-    for output in OUTPUTS_A {
-        for input in INPUTS_V {
-            list.push(ControllerPart {
-                name: format!("plain, {} A, {} V", digits(output), digits(input)),
-                line: 0,
-                model: None,
-                kind: Some(ControllerKind::Mppt),
-                greatest_input: Some(ElectricPotential::new::<volt>(input)),
-                input_current: Some(ElectricCurrent::new::<ampere>(output)),
-                operating: None,
-                start_margin: Some(ElectricPotential::new::<volt>(5.0)),
-                output: Some(ElectricCurrent::new::<ampere>(output)),
-                nominals: Vec::new(),
-                efficiency: Some(Ratio::new::<ratio>(0.95)),
-                idle: Some(Power::new::<watt>(1.0)),
-                charging: Charging::default(),
-                load_dump: None,
-                bank: None,
-                board: None,
-                route: None,
-                stud: None,
-                price: None,
-            });
-        }
-    }
-    list
 }

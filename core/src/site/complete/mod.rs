@@ -7,6 +7,8 @@ mod array;
 pub(super) mod bank;
 mod circuits;
 pub(super) mod inverter;
+pub(super) mod need;
+mod plain;
 mod stock;
 
 use alloc::string::{String, ToString};
@@ -134,7 +136,7 @@ fn round(document: &Document, hint: &Hint) -> Result<(Site, Reasons), Problems> 
     let refused = |problems: Vec<Problem>| Err(Problems(problems, 0));
     let open_inverters = inverter::take(document, &mut site, &mut problems);
     let wishes = bank_wishes(document);
-    let peak = |nominal| all_loads(&site, nominal);
+    let peak = |nominal| all_loads(document, &site, nominal);
     let mut first_steps = Vec::new();
     let mut banks = Vec::new();
     for part in &wishes {
@@ -221,10 +223,18 @@ fn bank_wishes(document: &Document) -> Vec<BankPart> {
 }
 
 /// All loads at once at a nominal voltage; those behind inverters through a usual efficiency.
-fn all_loads(site: &Site, nominal: ElectricPotential) -> Power {
+fn all_loads(document: &Document, site: &Site, nominal: ElectricPotential) -> Power {
+    // Of the inverter that a load names, or of the only one; a model's comes from the stock.
+    let efficiency = |load: &super::model::LoadEntry| {
+        let only = if document.inverters.len() == 1 { document.inverters.first() } else { None };
+        let name = load.inverter.as_ref().or_else(|| only.map(|i| &i.name))?;
+        let taken = site.inverters.iter().find(|i| i.name == *name).map(|i| i.efficiency);
+        taken.or_else(|| document.inverters.iter().find(|i| i.name == *name)?.efficiency)
+    };
     let one = |load: &super::model::LoadEntry| {
         let power = load.power.or_else(|| load.current.map(|a| a * nominal)).unwrap_or_default();
-        let each = if load.ac { power / inverter::PLAIN_EFFICIENCY } else { power };
+        let plain = Ratio::new::<uom::si::ratio::ratio>(inverter::PLAIN_EFFICIENCY);
+        let each = if load.ac { power / efficiency(load).unwrap_or(plain) } else { power };
         each * f64::from(load.count)
     };
     site.loads.iter().map(one).sum()
