@@ -109,7 +109,9 @@ pub(super) fn enlarge(
             Some((c, _)) if beside == Beside::Nowhere => return Ok(grow(c, drafts)),
             Some((c, _)) => {
                 if !core::mem::replace(&mut waiting, true) {
-                    alone.iter().for_each(|&own| hold(&mut waits, drafts, &flows.path(own)));
+                    for &own in &alone {
+                        hold(&mut waits, drafts, &flows.path(own));
+                    }
                 }
                 hold(&mut waits, drafts, &path);
                 grew |= grow(c, drafts);

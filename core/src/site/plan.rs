@@ -354,7 +354,7 @@ fn judge_all(
                 place: format!("[[circuit]] \"{}\"", circuit.name),
                 text: error.to_string(),
             })?;
-            replaced(index, core::mem::replace(slot, Some(done)));
+            replaced(index, slot.replace(done));
         }
     }
     Ok(())
@@ -564,12 +564,11 @@ fn fit(
     }
     for (entry, stated) in circuit.devices.iter().enumerate() {
         let complete = complete(stated);
-        let guard = match complete {
-            Some(guard) => Some((guard, None)),
-            None => {
-                let best = offers.best(&run_at(stated.end), draft, bare, Some(stated));
-                best.map(|(guard, judged)| (guard, Some(judged)))
-            }
+        let guard = if let Some(guard) = complete {
+            Some((guard, None))
+        } else {
+            let best = offers.best(&run_at(stated.end), draft, bare, Some(stated));
+            best.map(|(guard, judged)| (guard, Some(judged)))
         };
         if let Some((guard, judged)) = guard {
             let own = Fitted {
