@@ -141,7 +141,7 @@ const FIND_TEMPERATURES: usize = 6;
 const ONE_BY_ONE: usize = 50_000;
 
 /// So many times as many: then also parts that have nothing in common but what is stated.
-const MANY: usize = 4;
+const MANY: usize = 16;
 
 /// Makes the plan.
 pub(super) fn plan(site: &Site) -> Result<Plan, Problems> {
