@@ -117,7 +117,7 @@ def boards(out, plant, network, charger, text):
                     into += let
                 else:
                     past += let
-        found = re.search(rf'board "{board["name"]}".*?(?:bought for at least|let) ([\d.]+) A', text)
+        found = re.search(rf'board "{board["name"]}".*?(?:at least|let) ([\d.]+) A', text)
         out.number(f"board {board['name']}", "busbar, A", amount(found[1]), max(into, past))
         found = re.search(rf"busbar for at least ([\d.]+) A: {board['name']}", text)
         if found:

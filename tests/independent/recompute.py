@@ -24,7 +24,7 @@ from tables import area, value
 HERE = pathlib.Path(__file__).resolve().parent
 DEMO = HERE.parents[1] / "core" / "examples" / "sites"
 # Whole plants, with the least count of comparisons: a line that is worded anew must not slip out of sight.
-WHOLE = {"heron_point": 990, "telemetry_mast": 700, "launch": 585}
+WHOLE = {"heron_point": 985, "telemetry_mast": 695, "launch": 580}
 SITES = [DEMO / f"{n}.toml" for n in ("badly_built", *WHOLE)] + sorted((HERE / "sites").glob("*.toml"))
 
 

@@ -12,7 +12,7 @@ use uom::si::electric_potential::volt;
 use super::flow::Flows;
 use super::graph::{Item, Tree};
 use super::parts::Sense;
-use super::system::{FeedKind, Site};
+use super::system::{BankEntry, FeedKind, Site};
 use crate::rules::LoadUse;
 
 /// Sums of what hangs at or below each node.
@@ -57,7 +57,7 @@ impl Flows {
         if !tree.nodes.iter().any(|node| matches!(node.item, Item::Charger(_))) {
             return;
         }
-        // Each fills its own bank, where that stands in this network; a bank on the way takes nothing of it.
+        // Each fills its own bank, where that stands in this network, and may fill the one at the root as well.
         let places: BTreeMap<Item, usize> =
             tree.nodes.iter().enumerate().map(|(index, node)| (node.item, index)).collect();
         let way = |index: usize, charger: usize| {
@@ -72,8 +72,18 @@ impl Flows {
             })
         };
         let mut charge = vec![0.0; tree.nodes.len()];
+        let is_bank = |item: Item| matches!(item, Item::Bank(i) if site.banks.get(i).is_some_and(BankEntry::is_battery));
         for (index, charger) in chargers() {
-            for node in way(index, charger) {
+            let mut ways = way(index, charger);
+            // A bank on the way takes what comes: beyond it flows what the document states of the link.
+            let mut up = index;
+            while let Some(node) = tree.nodes.get(up).filter(|node| up != 0 && !is_bank(node.item)) {
+                ways.push(up);
+                up = node.parent;
+            }
+            ways.sort_unstable();
+            ways.dedup();
+            for node in ways {
                 if let Some(sum) = charge.get_mut(node) {
                     *sum += limit(Item::Charger(charger));
                 }
