@@ -226,6 +226,17 @@ fn rates() -> Vec<Pair> {
             charger("?"),
             ("hours = '1 h'", ""),
         ),
+        Pair::of(
+            NotChecked,
+            ("R10", "energy-not-checked"),
+            "a month is not short while what another source brings is not stated",
+            charger("hours = '0.1 h'").with("bank", "capacity = '200 Ah'").add(
+                "generator",
+                "name = 'second'; kind = 'shore'; output = '10 A'; absorption = '14.4 V'; float = '13.6 V'; \
+                 compensation = '0 mV/K'; sense = 'bank'; route = '1 m'; ?",
+            ),
+            ("hours = '2 h'", ""),
+        ),
     ]
 }
 

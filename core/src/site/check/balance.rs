@@ -12,7 +12,7 @@ use crate::site::energy::Demand;
 use crate::site::finding::{Findings, digits};
 use crate::site::plant_text::MONTHS;
 use crate::site::supply::{arrays_of, generators_of};
-use crate::site::system::Site;
+use crate::site::system::{ChargerKind, Site};
 
 /// Every bank on the mean day of each month.
 pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
@@ -53,22 +53,45 @@ pub(super) fn balance(site: &Site, demands: &[Demand], found: &mut Findings) {
                 short.push(format!("{name} {} of {} Wh", digits(brought), digits(taken)));
             }
         }
+        let unknown: Vec<&str> = site
+            .chargers
+            .iter()
+            .filter(|c| c.bank.is_some_and(|b| demand.banks.contains(&b)))
+            .filter_map(|c| match c.kind {
+                ChargerKind::Generator(i) => site.generators.get(i),
+                ChargerKind::Controller(_) => None,
+            })
+            .filter(|g| g.daily.is_none() && (g.hours.is_none() || g.output.is_none()))
+            .map(|g| g.name.as_str())
+            .collect();
         if short.is_empty() {
             at.pass("R10", &format!("in the worst month {} times what is taken out comes in", digits(worst)));
+        } else if !unknown.is_empty() {
+            // What is missing may come from there.
+            at.unmade(
+                ("R10", "energy-not-checked"),
+                &format!(
+                    "energy of the day: without {} less comes in than is taken out ({}); state its hours or daily",
+                    unknown.join(", "),
+                    months_of(&short)
+                ),
+            );
         } else {
             at.nonconforming(
                 ("R10", "energy-short"),
-                format!(
-                    "on the mean day less comes in than is taken out: {}",
-                    match short.as_slice() {
-                        [first, .., last] if short.len() == 12 && first.get(4..) == last.get(4..) => {
-                            format!("every month {}", first.get(4..).unwrap_or(""))
-                        }
-                        list => list.join(", "),
-                    }
-                ),
+                format!("on the mean day less comes in than is taken out: {}", months_of(&short)),
                 "use a larger array, less load in those months, or a generator for longer",
             );
         }
+    }
+}
+
+/// The short months; one for all where they are alike.
+fn months_of(short: &[String]) -> String {
+    match short {
+        [first, .., last] if short.len() == 12 && first.get(4..) == last.get(4..) => {
+            format!("every month {}", first.get(4..).unwrap_or(""))
+        }
+        list => list.join(", "),
     }
 }

@@ -296,9 +296,9 @@ fn problem(line: u32, place: String, text: impl Into<String>) -> Problem {
 
 /// The outputs that charge, and the banks they charge: the one named, else the one they are joined to, else the only one.
 fn add_chargers(site: &mut Site) {
-    let bank = |name: Option<&String>, own: &str| match name {
+    let bank = |name: Option<&String>, own: &str, board: Option<&String>| match name {
         Some(name) => site.banks.iter().position(|b| b.name == *name),
-        None => joined_bank(site, own).or_else(|| site.banks.iter().position(BankEntry::is_battery)),
+        None => joined_bank(site, own, board).or_else(|| site.banks.iter().position(BankEntry::is_battery)),
     };
     let mut chargers = Vec::new();
     for (index, controller) in site.controllers.iter().enumerate() {
@@ -308,7 +308,7 @@ fn add_chargers(site: &mut Site) {
             kind: ChargerKind::Controller(index),
             limit: controller.output,
             charging: controller.charging,
-            bank: bank(controller.bank.as_ref(), &controller.name),
+            bank: bank(controller.bank.as_ref(), &controller.name, controller.board.as_ref()),
             stud: controller.stud,
         });
     }
@@ -319,19 +319,19 @@ fn add_chargers(site: &mut Site) {
             kind: ChargerKind::Generator(index),
             limit: generator.output,
             charging: generator.charging,
-            bank: bank(generator.bank.as_ref(), &generator.name),
+            bank: bank(generator.bank.as_ref(), &generator.name, generator.board.as_ref()),
             stud: generator.stud,
         });
     }
     site.chargers = chargers;
 }
 
-/// The bank that a source's own circuits lead to.
-fn joined_bank(site: &Site, own: &str) -> Option<usize> {
+/// The bank that a source's own circuits lead to, or those of the board that it is to be joined to.
+fn joined_bank(site: &Site, own: &str, board: Option<&String>) -> Option<usize> {
     let is_inlet = |name: &str| {
         site.controllers.iter().any(|c| c.name == name) || site.converters.iter().any(|c| c.name == name)
     };
-    let mut seen: Vec<&str> = alloc::vec![own];
+    let mut seen: Vec<&str> = core::iter::once(own).chain(board.map(String::as_str)).collect();
     let mut next = 0;
     while let Some(&here) = seen.get(next) {
         next += 1;
