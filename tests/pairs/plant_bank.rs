@@ -143,6 +143,14 @@ fn disconnects() -> Vec<Pair> {
             lithium("disconnect = '?'"),
             ("12.56 V", "12.48 V"),
         ),
+        // 10.56 Ah over a day are 0.44 A: 11.96 − 6 × 0.0044 × 0.25 × 1.8 = 11.95 V, less 0.12 V.
+        Pair::of(
+            Advice,
+            ("R14", "disconnect-low-under-few-loads"),
+            "a bank is not emptied by few loads before its disconnect",
+            plant("disconnect = '?'"),
+            ("11.85 V", "11.8 V"),
+        ),
         wrong(
             ("R14", "disconnect-below-cut-off"),
             "wiring is laid out for the voltage of the disconnect",

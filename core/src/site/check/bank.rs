@@ -42,6 +42,7 @@ const JOINT_OHM: f64 = 0.1e-3;
 const DISCONNECT_SLACK: f64 = 0.01;
 /// Least distance of reconnect from disconnect, part of nominal. Common practice, no source.
 const HYSTERESIS: f64 = 0.025;
+const HOURS_A_DAY: f64 = 24.0;
 /// Rounding of voltages, V.
 const HAIR_V: f64 = 1e-6;
 
@@ -307,14 +308,17 @@ fn disconnects(
             Some(asked.citation),
             "raise it: even while all loads draw, the bank is emptier there than it may be, and more so under few",
         ),
-        Ok(asked) => at.pass(
-            "R14",
-            &format!(
-                "disconnected at {} V, at least {} V less one per cent of nominal",
-                digits(own.get::<volt>()),
-                digits(asked.disconnect.get::<volt>())
-            ),
-        ),
+        Ok(asked) => {
+            at.pass(
+                "R14",
+                &format!(
+                    "disconnected at {} V, at least {} V less one per cent of nominal",
+                    digits(own.get::<volt>()),
+                    digits(asked.disconnect.get::<volt>())
+                ),
+            );
+            few_loads(site, bank, chemistry, part, demand, at);
+        }
         Err(error) => at.unmade(("R14", "disconnect-not-checked"), &format!("disconnect voltage: {error}")),
     }
     if own < bank.cut_off {
@@ -353,6 +357,38 @@ fn disconnects(
                 at.pass("R14", &format!("reconnected at {} V", digits(volts)));
             }
         }
+    }
+}
+
+/// The disconnect under the mean current of a day: few loads pull the voltage less, and the bank is emptier when it falls.
+fn few_loads(
+    site: &Site,
+    bank: &BankEntry,
+    chemistry: Chemistry,
+    part: &BankPart,
+    demand: Option<&Demand>,
+    at: &mut At<'_>,
+) {
+    let Some((own, demand)) = part.disconnect.zip(demand) else { return };
+    let mean = demand.greatest_day().charge(bank.nominal).get::<ampere_hour>() / HOURS_A_DAY;
+    let rate = ChargeRate::per_hour((mean / bank.capacity.get::<ampere_hour>()).clamp(0.0, 100.0));
+    let asked = rate.and_then(|rate| disconnect(chemistry, bank.cells, rate, temperatures(site, part).0));
+    let Ok(asked) = asked else { return };
+    let slack = DISCONNECT_SLACK * bank.nominal.get::<volt>();
+    if own.get::<volt>() < asked.disconnect.get::<volt>() - slack {
+        at.tell(
+            Severity::Advice,
+            ("R14", "disconnect-low-under-few-loads"),
+            format!(
+                "disconnected at {} V; under the mean of {} A it is emptier than {:.0} % below {} V",
+                digits(own.get::<volt>()),
+                digits(mean),
+                100.0 * asked.floor.get(),
+                digits(asked.disconnect.get::<volt>())
+            ),
+            Some(asked.citation),
+            "raise it, or use a disconnect that counts charge",
+        );
     }
 }
 
