@@ -264,3 +264,28 @@ fn rest() -> Vec<Pair> {
 pub fn pairs() -> Vec<Pair> {
     [voltages(), currents(), rest()].into_iter().flatten().collect()
 }
+
+/// A check that lacks a datum names the key that supplies it.
+#[test]
+fn what_is_missing_is_named_by_its_key() {
+    for (section, key) in [
+        ("array", "voc_coefficient"),
+        ("array", "greatest_voltage"),
+        ("array", "series_fuse"),
+        ("array", "isolator"),
+        ("controller", "greatest_input"),
+        ("controller", "start_margin"),
+        ("controller", "input_current"),
+    ] {
+        // Under craft rules no table of factors stands in for a coefficient.
+        let site = Document::array("craft_iso", 2, 2).with(section, &format!("{key} = none")).to_string();
+        let site = ampwright::site::read(&site).unwrap_or_else(|problems| panic!("{problems}"));
+        let report = ampwright::site::inspect(&site).unwrap_or_else(|problems| panic!("{problems}"));
+        let told = report.findings.iter().filter(|f| f.slug == "array-not-checked");
+        assert!(
+            told.clone().any(|f| f.text.ends_with(&format!("; state {key}"))),
+            "{key}: {:#?}",
+            told.collect::<Vec<_>>()
+        );
+    }
+}

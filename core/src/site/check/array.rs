@@ -89,6 +89,26 @@ const fn meaning(subject: PvSubject) -> (&'static str, Severity, &'static str) {
     }
 }
 
+/// The key that supplies what a check lacks.
+fn key(check: &PvCheck) -> &'static str {
+    if check.missing.is_some_and(|missing| missing.contains("coefficient of voltage nor")) {
+        return "; state voc_coefficient";
+    }
+    if check.missing.is_some_and(|missing| missing.contains("coefficient of power")) {
+        return "; state power_coefficient";
+    }
+    match check.subject {
+        PvSubject::ModuleVoltage => "; state greatest_voltage",
+        PvSubject::ControllerVoltage => "; state greatest_input",
+        PvSubject::PartVoltage => "; state isolator",
+        PvSubject::ChargeVoltage => "; state start_margin",
+        PvSubject::ShortCircuit | PvSubject::InputCurrent => "; state input_current",
+        PvSubject::OutputCurrent => "; state output",
+        PvSubject::StringFault | PvSubject::DeviceModule => "; state series_fuse",
+        _ => "",
+    }
+}
+
 fn one(array: &Array, check: &PvCheck, at: &mut At<'_>) {
     // The string's conductor is not in the document: the question takes the module's rating for it, which is judged already.
     if check.subject == PvSubject::ConductorFault {
@@ -106,7 +126,9 @@ fn one(array: &Array, check: &PvCheck, at: &mut At<'_>) {
         }
         // One string has no other to feed its fault.
         PvOutcome::NotChecked if array.strings < 2 && check.subject == PvSubject::StringFault => {}
-        PvOutcome::NotChecked => at.unmade(("R10", "array-not-checked"), &check.to_string()),
+        PvOutcome::NotChecked => {
+            at.unmade(("R10", "array-not-checked"), &format!("{check}{}", key(check)));
+        }
     }
 }
 
