@@ -13,7 +13,7 @@ pub const HERON_POINT: &str = include_str!("../../core/examples/sites/heron_poin
 /// The faults: where, which kind of finding, how grave.
 ///
 /// The arithmetic beside them is by hand; sources as in the pairs. Cut-off of the workshop is 12 × 0.875 = 10.5 V.
-const FAULTS: [(&str, &str, Severity); 74] = [
+const FAULTS: [(&str, &str, Severity); 76] = [
     // Workshop, wiring.
     // 60 A on 12 AWG, which takes 20 A (NFPA 70-2023, 240.4(D)).
     (r#"circuit "bench lights", F5"#, "device-above-ampacity", Danger),
@@ -108,6 +108,9 @@ const FAULTS: [(&str, &str, Severity); 74] = [
     (r#"reading "lug at the pump", temperature"#, "hotter-than-insulation", Danger),
     // 55 A for half an hour and 15 W day and night are more than 55 Ah a day, for four days.
     (r#"bank "pump house""#, "bank-too-small", Nonconforming),
+    // 10.5 and 12.4 V under the mean current of a day.
+    (r#"bank "house""#, "disconnect-low-under-few-loads", Advice),
+    (r#"bank "pump house""#, "disconnect-low-under-few-loads", Advice),
     // 55 A and 15 W against 50 A.
     (r#"bank "pump house""#, "discharge-above-limit", Nonconforming),
     (r#"bank "pump house""#, "charge-not-blocked-in-cold", Danger),

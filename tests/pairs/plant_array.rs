@@ -278,7 +278,12 @@ fn what_is_missing_is_named_by_its_key() {
         ("controller", "input_current"),
     ] {
         // Under craft rules no table of factors stands in for a coefficient.
-        let site = Document::array("craft_iso", 2, 2).with(section, &format!("{key} = none")).to_string();
+        let mut keys = format!("{key} = none");
+        if key == "isolator" {
+            // What is told of an isolator needs one.
+            keys += "; isolator_current = none; load_break = none";
+        }
+        let site = Document::array("craft_iso", 2, 2).with(section, &keys).to_string();
         let site = ampwright::site::read(&site).unwrap_or_else(|problems| panic!("{problems}"));
         let report = ampwright::site::inspect(&site).unwrap_or_else(|problems| panic!("{problems}"));
         let told = report.findings.iter().filter(|f| f.slug == "array-not-checked");
