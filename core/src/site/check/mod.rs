@@ -7,6 +7,7 @@ mod array;
 mod balance;
 pub(super) mod bank;
 pub(super) mod charge;
+mod disconnect;
 mod load;
 pub(super) mod place;
 
