@@ -12,7 +12,7 @@ use super::model::CircuitEntry;
 use super::plan::Plan;
 use super::report::CircuitLine;
 use super::system::{BankEntry, FeedKind, Site};
-use crate::citation::Seen;
+use crate::citation::{Citation, Seen};
 /// What was taken where the document says nothing about the wiring.
 pub(super) fn assumptions(site: &Site, plan: &Plan) -> Vec<String> {
     let mut lines = Vec::new();
@@ -185,6 +185,11 @@ pub(super) fn plant_assumptions(site: &Site) -> Vec<String> {
     lines
 }
 
+fn words(citation: Citation) -> String {
+    let Citation { document, place, .. } = citation;
+    if place.is_empty() { document.to_string() } else { format!("{document}, {place}") }
+}
+
 /// Sources used that nobody has seen.
 pub(super) fn recalled(circuits: &[CircuitLine], plant: &PlantLines) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
@@ -195,7 +200,7 @@ pub(super) fn recalled(circuits: &[CircuitLine], plant: &PlantLines) -> Vec<Stri
         let distances = circuit.devices.iter().filter(|d| d.from_source.is_some());
         let distances = distances.filter_map(|d| d.distance_limit.as_ref().map(|l| l.citation));
         for citation in checks.chain(factors).chain(distances).filter(|c| c.seen == Seen::Recalled) {
-            let line = format!("{}, {}", citation.document, citation.place);
+            let line = words(citation);
             if !lines.contains(&line) {
                 lines.push(line);
             }
@@ -205,7 +210,7 @@ pub(super) fn recalled(circuits: &[CircuitLine], plant: &PlantLines) -> Vec<Stri
     let arrays = plant.arrays.iter().flat_map(|a| &a.steps);
     let sources = plant.generators.iter().flat_map(|g| &g.steps);
     for citation in banks.chain(arrays).chain(sources).filter_map(|step| step.citation) {
-        let line = format!("{}, {}", citation.document, citation.place);
+        let line = words(citation);
         if citation.seen == Seen::Recalled && !lines.contains(&line) {
             lines.push(line);
         }

@@ -73,7 +73,9 @@ pub(super) fn how(site: &Site, runs: &[RunTest]) -> Vec<String> {
         None => "no least value is held: write down volts and reading".to_string(),
     };
     alloc::vec![
-        format!("insulation: both conductors together to {earth}, electronics taken off{bond}; {limit}"),
+        format!(
+            "insulation: both conductors together to {earth}, electronics and surge protection taken off{bond}; {limit}"
+        ),
         "torque: as the maker of each terminal states; none is held here".to_string(),
     ]
 }
